@@ -1,0 +1,1 @@
+//! Moist-air functions: wet bulb, dew point, humidity ratio.

@@ -1,0 +1,1 @@
+//! Bills: metered columns priced line by line.

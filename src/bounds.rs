@@ -1,0 +1,1 @@
+//! One table of physical limits, with the labels used in messages.

@@ -1,0 +1,1 @@
+//! The hour axis in UTC and the civil clock over it.

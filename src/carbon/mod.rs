@@ -1,0 +1,1 @@
+//! Carbon factors with the scope they belong to.

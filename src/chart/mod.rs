@@ -1,0 +1,1 @@
+//! Pictures in one visual language.

@@ -1,0 +1,1 @@
+//! TOML text into flat structs whose every leaf knows its place.

@@ -1,0 +1,1 @@
+//! Everything but heat pumps that makes heat: boilers, direct electric.

@@ -1,0 +1,1 @@
+//! The heat pump: cycle, machine, fit, map, part load, frost, seasonal rating.

@@ -1,0 +1,1 @@
+//! What the warm side asks for: fabric, set point, emitters, hot water.

@@ -1,0 +1,1 @@
+//! Set points and signals hour by hour, made before the run.

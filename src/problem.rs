@@ -1,0 +1,1 @@
+//! Where a problem is, what was found, what is allowed, what to write instead.

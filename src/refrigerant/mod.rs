@@ -1,0 +1,1 @@
+//! Refrigerant properties: reference equations and fast tables made from them.

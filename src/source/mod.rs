@@ -1,0 +1,1 @@
+//! What the cold side offers: outdoor air, ground.

@@ -1,0 +1,1 @@
+//! Cases side by side: levers and break-even.

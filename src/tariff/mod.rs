@@ -1,0 +1,1 @@
+//! Tariffs: what a household is charged, as price columns and rules.

@@ -1,0 +1,1 @@
+//! The hours: one step, one run, the ledger row, sinks.
