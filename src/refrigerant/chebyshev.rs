@@ -1,0 +1,1 @@
+//! Chebyshev interpolation, in one and in two variables.

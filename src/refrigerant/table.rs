@@ -1,0 +1,3 @@
+//! Fast.
+/// x
+pub struct CycleTable;
