@@ -1,6 +1,8 @@
 //! The exact equations against CoolProp 8.0.0, an independent implementation of the same publications.
 //! The values and the script that made them are in `tests/reference/`.
 
+#![cfg(test)] // so that the lints know the helpers below for test code
+
 use serde::Deserialize;
 use winterledger::refrigerant::{Equation, Refrigerant};
 

@@ -15,8 +15,8 @@ pub(super) fn increasing_root(
     tolerance: f64,
     mut function: impl FnMut(f64) -> Option<(f64, f64)>,
 ) -> Option<f64> {
-    // also refuses NaN, on which `clamp` would panic
-    if !(low <= high) {
+    // `clamp` would panic on an empty bracket or one that is not a number
+    if low > high || low.is_nan() || high.is_nan() {
         return None;
     }
     let mut point = start.clamp(low, high);
