@@ -30,12 +30,14 @@
 //! ```
 
 mod check;
+mod file;
 mod leaf;
 mod read;
 mod unknown;
 mod word;
 
 pub use check::Check;
+pub use file::read_text;
 pub use leaf::{Leaf, LeafValue, Section};
 pub use read::{Document, Source};
 pub use word::Word;
