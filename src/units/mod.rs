@@ -1,0 +1,11 @@
+//! Quantities with their units.
+//!
+//! A quantity in an input file is text that carries its unit, `"212 W/K"`. Each kind of quantity is a type of its
+//! own with one canonical unit, named by its accessor (`w_per_k()`), so a power cannot be read where a heat-loss
+//! coefficient is meant. A bare number is refused with what to write.
+
+mod measures;
+mod text;
+
+pub use measures::*;
+pub use text::{Measure, Unit, UnitProblem, parse, split_number};
