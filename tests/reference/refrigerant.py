@@ -94,7 +94,7 @@ for fluid in FLUIDS:
     while done < 200:
         te = draw.uniform(-40, 25)
         tc = draw.uniform(max(15, te + 10), highest)
-        superheat, subcooling = draw.uniform(0.5, 15), draw.uniform(0.5, 12)
+        superheat, subcooling = draw.uniform(0.5, 15), draw.uniform(0.5, min(12, tc - te))
         efficiency = draw.uniform(0.45, 0.85)
         s.update(CP.QT_INPUTS, 1.0, te + K)
         low = s.p()
@@ -107,6 +107,8 @@ for fluid in FLUIDS:
         h2 = h1 + (h2s - h1) / efficiency
         s.update(CP.HmassP_INPUTS, h2, high)
         t2 = s.T() - K
+        if t2 > 200:  # no compressor reaches this; the least efficient corners of the draw do
+            continue
         s.update(CP.PT_INPUTS, high, tc - subcooling + K)
         h3 = s.hmass()
         cycles.append(
