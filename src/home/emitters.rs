@@ -30,6 +30,7 @@ pub struct Emitters {
     design_spread_k: f64,
     design_excess_k: f64,
     greatest_flow_c: f64,
+    greatest_output_kw: f64,
 }
 
 /// Water temperatures at a load.
@@ -64,13 +65,16 @@ impl Emitters {
         room_c: f64,
         greatest_flow_c: f64,
     ) -> Self {
-        Self {
+        let mut emitters = Self {
             kind,
             design_load_kw,
             design_spread_k: flow_c - return_c,
             design_excess_k: (flow_c + return_c) / 2.0 - room_c,
             greatest_flow_c: greatest_flow_c.max(flow_c),
-        }
+            greatest_output_kw: design_load_kw,
+        };
+        emitters.greatest_output_kw = emitters.output_kw(emitters.greatest_flow_c, room_c);
+        emitters
     }
 
     /// Kind of emitter.
@@ -123,9 +127,14 @@ impl Emitters {
         self.design_load_kw * y.powf(n)
     }
 
-    /// Greatest heat at the greatest permitted flow temperature, kW.
-    pub fn greatest_output_kw(&self, room_c: f64) -> f64 {
-        self.output_kw(self.greatest_flow_c, room_c)
+    /// Greatest heat at the greatest permitted flow temperature into a room at its design temperature, kW.
+    pub fn greatest_output_kw(&self) -> f64 {
+        self.greatest_output_kw
+    }
+
+    /// Flow minus return at the design load, K.
+    pub fn design_spread_k(&self) -> f64 {
+        self.design_spread_k
     }
 }
 
