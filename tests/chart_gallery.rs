@@ -1,0 +1,207 @@
+//! Every picture, drawn from realistic invented data and from named hostile cases.
+//!
+//! Checked for each: labels stay on the canvas and touch no other label, the SVG is well-formed XML with title,
+//! description and fonts, the PNG has the size promised, the alt text says something. The PNG and SVG files are left
+//! in the test's folder under `target/tmp/gallery` to be looked at.
+
+use std::path::PathBuf;
+use winterledger::chart::{AnnualCost, Marks, PNG_PIXELS, Picture, SystemCost, WIDTH, annual_cost};
+
+fn folder() -> PathBuf {
+    let folder = PathBuf::from(env!("CARGO_TARGET_TMPDIR")).join("gallery");
+    std::fs::create_dir_all(&folder).expect("folder for pictures");
+    folder
+}
+
+/// Checks what holds for every picture; `name` is the file it is left under.
+fn check(name: &str, picture: &Picture) {
+    for (i, a) in picture.labels().iter().enumerate() {
+        assert!(
+            picture.canvas().contains(&a.area),
+            "{name}: “{}” leaves the canvas: {:?} of {:?}",
+            a.text,
+            a.area,
+            picture.canvas()
+        );
+        for b in &picture.labels()[..i] {
+            assert!(
+                !a.area.overlaps(&b.area),
+                "{name}: “{}” {:?} lies on “{}” {:?}",
+                a.text,
+                a.area,
+                b.text,
+                b.area
+            );
+        }
+    }
+    let svg = picture.svg().expect("SVG");
+    let tree = roxmltree::Document::parse(&svg).unwrap_or_else(|e| panic!("{name}: {e}"));
+    let root = tree.root_element();
+    let child = |tag: &str| {
+        root.children()
+            .find(|n| n.has_tag_name(tag))
+            .and_then(|n| n.text())
+    };
+    assert_eq!(child("title"), Some(picture.title.as_str()), "{name}");
+    assert_eq!(child("desc"), Some(picture.alt.as_str()), "{name}");
+    assert!(
+        child("style").is_some_and(|s| s.contains("@font-face")),
+        "{name}"
+    );
+    let texts: Vec<String> = root
+        .descendants()
+        .filter(|n| n.has_tag_name("text"))
+        .filter_map(|n| n.text().map(|t| t.trim().to_string()))
+        .collect();
+    let labels: Vec<String> = picture.labels().iter().map(|l| l.text.clone()).collect();
+    assert_eq!(texts, labels, "{name}: SVG texts are the labels");
+    assert!(
+        picture.alt.len() > 60 && picture.alt.ends_with('.'),
+        "{name}: {}",
+        picture.alt
+    );
+
+    let bytes = picture.png().expect("PNG");
+    let info = png::Decoder::new(bytes.as_slice())
+        .read_info()
+        .expect("readable PNG")
+        .info()
+        .clone();
+    assert_eq!(info.width, WIDTH as u32 * PNG_PIXELS, "{name}");
+    assert_eq!(
+        info.height,
+        picture.canvas().bottom.ceil() as u32 * PNG_PIXELS,
+        "{name}"
+    );
+    std::fs::write(folder().join(format!("{name}.png")), bytes).expect("written");
+    std::fs::write(folder().join(format!("{name}.svg")), svg).expect("written");
+    std::fs::write(folder().join(format!("{name}.txt")), &picture.alt).expect("written");
+}
+
+/// Names that have broken pictures before: other scripts, markup, control characters, nothing at all.
+const NAMES: [&str; 8] = [
+    "Gas boiler as it runs today",
+    "Air source, larger radiators",
+    "<script>alert(\"1\")</script> & 'quotes'",
+    "بيت الشتاء مع مضخة حرارية",
+    "🏠🔥 Wärme für 90 m² – Łódź",
+    "line\nbreak\tand \u{202E}reversed\u{0}",
+    "בית חורף 5 kW",
+    "",
+];
+
+fn long_name() -> String {
+    "Ground source with two bores and underfloor heating downstairs ".repeat(7)[..400].to_string()
+}
+
+fn english() -> Marks {
+    Marks::default()
+}
+
+mod annual {
+    use super::*;
+
+    fn system(label: &str, today: bool, energy: f64, standing: f64, tax: f64) -> SystemCost {
+        SystemCost {
+            label: label.into(),
+            today,
+            energy,
+            standing,
+            tax,
+        }
+    }
+
+    fn draw(name: &str, currency: &str, systems: Vec<SystemCost>) {
+        let data = AnnualCost {
+            currency: currency.into(),
+            systems,
+        };
+        check(
+            &format!("annual_cost_{name}"),
+            &annual_cost(&data, &english()).expect("drawn"),
+        );
+    }
+
+    #[test]
+    fn realistic() {
+        draw(
+            "realistic",
+            "GBP",
+            vec![
+                system(NAMES[0], true, 1013.0, 311.0, 66.2),
+                system("New boiler, turned down", false, 938.0, 311.0, 62.5),
+                system(NAMES[1], false, 1024.0, 197.0, 61.1),
+                system("Ground source, larger radiators", false, 849.0, 197.0, 52.3),
+            ],
+        );
+    }
+
+    #[test]
+    fn one_system() {
+        draw(
+            "one",
+            "EUR",
+            vec![system("Boiler", true, 900.0, 120.0, 190.0)],
+        );
+    }
+
+    #[test]
+    fn eight_systems_with_hostile_names() {
+        let systems = NAMES
+            .iter()
+            .enumerate()
+            .map(|(i, n)| system(n, i == 0, 1000.0 - 90.0 * i as f64, 200.0, 60.0))
+            .collect();
+        draw("eight", "CHF", systems);
+    }
+
+    #[test]
+    fn name_of_400_characters() {
+        draw(
+            "long",
+            "GBP",
+            vec![
+                system(&long_name(), true, 1000.0, 300.0, 60.0),
+                system(&long_name(), false, 900.0, 200.0, 50.0),
+            ],
+        );
+    }
+
+    #[test]
+    fn credits_dearer_choices_and_the_same() {
+        draw(
+            "credits",
+            "GBP",
+            vec![
+                system("Boiler", true, 700.0, 300.0, 50.0),
+                system("Exports more than it buys", false, -640.0, 200.0, -22.0),
+                system("Dearer", false, 1500.0, 200.0, 85.0),
+                system("The same", false, 700.2, 300.0, 50.0),
+            ],
+        );
+    }
+
+    #[test]
+    fn all_nothing() {
+        draw(
+            "nothing",
+            "GBP",
+            vec![
+                system("Boiler", true, 0.0, 0.0, 0.0),
+                system("None", false, 0.0, 0.0, 0.0),
+            ],
+        );
+    }
+
+    #[test]
+    fn huge_and_tiny() {
+        draw(
+            "huge",
+            "ISK",
+            vec![
+                system("Boiler", true, 123_456_789.0, 300.0, 50.0),
+                system("Tiny", false, 0.02, 0.001, 0.0),
+            ],
+        );
+    }
+}
