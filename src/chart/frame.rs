@@ -100,7 +100,7 @@ pub(crate) struct Frame {
 /// Height kept above a plot for the title of its y axis.
 pub(crate) const ABOVE: f64 = 22.0;
 /// Height kept below a plot for tick labels and the title of its x axis.
-pub(crate) const BELOW: f64 = 44.0;
+pub(crate) const BELOW: f64 = 46.0;
 
 impl Frame {
     /// A frame between `left` and `right` and between `top` and `bottom`, the room for axis texts taken from inside.
@@ -177,10 +177,10 @@ impl Frame {
         for (value, text) in &self.x.ticks {
             let x = self.at_x(*value);
             scene.line(&[(x, area.bottom), (x, area.bottom + 4.0)], AXIS, 1.2);
-            scene.tick(text, (x, area.bottom + 18.0), Anchor::Middle);
+            scene.tick(text, (x, area.bottom + 20.0), Anchor::Middle);
         }
         let title = super::font::fit(&self.x.title, set.size, set.weight, area.right - area.left);
-        scene.text(&title, (area.right, area.bottom + 37.0), Anchor::End, set);
+        scene.text(&title, (area.right, area.bottom + 39.0), Anchor::End, set);
     }
 
     /// Upright grid lines alone.

@@ -147,6 +147,37 @@ fn clip_segment(a: Point, b: Point, area: &Rect) -> Option<(Point, Point)> {
     })
 }
 
+/// A polygon cut at a rectangle (Sutherland and Hodgman 1974, edge by edge).
+pub(crate) fn clip_area(polygon: &[Point], area: &Rect) -> Vec<Point> {
+    type Inside = fn(Point, &Rect) -> f64;
+    let edges: [Inside; 4] = [
+        |p, r| p.0 - r.left,
+        |p, r| r.right - p.0,
+        |p, r| p.1 - r.top,
+        |p, r| r.bottom - p.1,
+    ];
+    let mut shape: Vec<Point> = polygon
+        .iter()
+        .copied()
+        .filter(|p| p.0.is_finite() && p.1.is_finite())
+        .collect();
+    for inside in edges {
+        let corners = std::mem::take(&mut shape);
+        for (i, &b) in corners.iter().enumerate() {
+            let a = corners[(i + corners.len() - 1) % corners.len()];
+            let (da, db) = (inside(a, area), inside(b, area));
+            if (da < 0.0) != (db < 0.0) {
+                let share = da / (da - db);
+                shape.push((a.0 + share * (b.0 - a.0), a.1 + share * (b.1 - a.1)));
+            }
+            if db >= 0.0 {
+                shape.push(b);
+            }
+        }
+    }
+    shape
+}
+
 /// A line thinned to what can be seen: points closer than `step` sideways to the last kept one are merged into the
 /// lowest and highest of their column, so peaks stay.
 pub(crate) fn thin(points: &[Point], step: f64) -> Vec<Point> {
@@ -259,6 +290,18 @@ mod tests {
         );
         assert_eq!(gap.len(), 2);
         assert!(clip(&[(-5.0, -5.0), (-1.0, -9.0)], &UNIT).is_empty());
+    }
+
+    #[test]
+    fn a_clipped_area_is_the_part_that_lies_inside() {
+        // A square of 40 whose centre is a corner of the rectangle: a quarter stays.
+        let square = [(80.0, 40.0), (120.0, 40.0), (120.0, 80.0), (80.0, 80.0)];
+        let part = clip_area(&square, &UNIT);
+        assert_eq!(part.len(), 4);
+        for corner in [(80.0, 40.0), (100.0, 40.0), (100.0, 60.0), (80.0, 60.0)] {
+            assert!(part.contains(&corner), "{corner:?} not in {part:?}");
+        }
+        assert!(clip_area(&[(200.0, 0.0), (210.0, 0.0), (205.0, 9.0)], &UNIT).is_empty());
     }
 
     #[test]

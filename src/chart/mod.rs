@@ -28,12 +28,14 @@ mod palette;
 mod scene;
 
 mod annual_cost;
+mod pressure_enthalpy;
 
 pub use annual_cost::{AnnualCost, SystemCost, annual_cost};
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
 pub use numbers::Marks;
 pub use paint::PNG_PIXELS;
 pub use palette::Colour;
+pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
 pub use scene::{Label, Rect, WIDTH};
 
 use std::fmt;

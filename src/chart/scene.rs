@@ -185,9 +185,7 @@ impl Scene {
 
     /// Writes the label of a tick, unless it would touch another label.
     pub(crate) fn tick(&mut self, text: &str, at: Point, anchor: Anchor) {
-        if self.is_free(&measure(text, at, anchor, Type::small()).area) {
-            self.text(text, at, anchor, Type::small());
-        }
+        self.place_bare(text, at, anchor, Type::small());
     }
 
     /// Writes a text with paper behind it, so that lines under it do not cut it.
@@ -207,6 +205,15 @@ impl Scene {
             }
         }
         false
+    }
+
+    /// Like `place`, without paper behind: for quiet words on a tinted ground.
+    pub(crate) fn place_bare(&mut self, text: &str, at: Point, anchor: Anchor, set: Type) -> bool {
+        let free = self.is_free(&measure(text, at, anchor, set).area);
+        if free {
+            self.text(text, at, anchor, set);
+        }
+        free
     }
 
     /// Whether `area` lies on the canvas and touches no label.
@@ -274,6 +281,25 @@ impl Scene {
             radius,
             colour,
         });
+    }
+
+    /// Draws an arrow head half way between two points that are far enough apart.
+    pub(crate) fn arrow(&mut self, a: Point, b: Point, colour: Colour) {
+        let (dx, dy) = (b.0 - a.0, b.1 - a.1);
+        let length = dx.hypot(dy);
+        if length < 36.0 {
+            return;
+        }
+        let (ux, uy) = (dx / length, dy / length);
+        let (mx, my) = ((a.0 + b.0) / 2.0, (a.1 + b.1) / 2.0);
+        let point = |along: f64, across: f64| {
+            (mx + along * ux - across * uy, my + along * uy + across * ux)
+        };
+        self.area(
+            &[point(8.0, 0.0), point(-6.0, 6.5), point(-6.0, -6.5)],
+            colour,
+            1.0,
+        );
     }
 
     /// Draws the point of a series.
