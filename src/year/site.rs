@@ -1,5 +1,7 @@
 //! What all systems share, and what a plan says hour by hour.
 
+use std::ops::Range;
+
 use crate::calendar::{CivilHour, HourAxis};
 
 /// Weather and clock of every hour of the axis; shared by all systems.
@@ -9,6 +11,10 @@ pub struct Site {
     pub axis: HourAxis,
     /// The civil clock over them.
     pub civil: Vec<CivilHour>,
+    /// Civil month of each hour, from 0.
+    pub month0: Vec<u8>,
+    /// The years of the weather, each with its hours of the axis.
+    pub years: Vec<(i32, Range<usize>)>,
     /// Outdoor air, °C.
     pub outdoor_c: Vec<f64>,
     /// Relative humidity, 0 to 1, where the weather has it.

@@ -1,20 +1,24 @@
-//! A sink that keeps sums by month and by price band, and the extremes.
+//! A sink that keeps sums by month, what the meters read, and the extremes.
 
 use super::Sink;
 use super::row::{Flags, Row, Sums};
+use super::site::Site;
+use crate::tariff::{Flows, Meter, Reading};
 
-/// Sums of a year: by month and by meter bucket, with the extremes of the hours.
+/// Sums of a stretch of hours: by month and by meter, with the extremes.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Totals<'a> {
-    month0: &'a [u8],
-    electricity_bucket: &'a [u16],
-    fuel_bucket: &'a [u16],
-    /// Sums of each month.
+    site: &'a Site,
+    electricity_meter: &'a Meter,
+    fuel_meter: Option<&'a Meter>,
+    /// Sums of each civil month.
     pub months: [Sums; 12],
-    /// Electricity in each bucket of its meter, kWh.
-    pub electricity_kwh: Vec<f64>,
-    /// Fuel in each bucket of its meter, kWh.
-    pub fuel_kwh: Vec<f64>,
+    /// What the electricity meter read.
+    pub electricity: Reading,
+    /// What the fuel meter read.
+    pub fuel: Option<Reading>,
+    /// Hours taken.
+    pub hours: u32,
     /// Lowest indoor temperature, °C.
     pub min_indoor_c: f64,
     /// Greatest hourly mean of electric power, kW.
@@ -23,31 +27,23 @@ pub struct Totals<'a> {
     pub hours_backup: u32,
     /// Hours that ended short of heat.
     pub hours_short: u32,
-    /// Hours whose weather was repaired.
-    pub hours_repaired: u32,
 }
 
 impl<'a> Totals<'a> {
-    /// Nothing yet; the columns give month and meter bucket of every hour of the axis.
-    pub fn new(
-        month0: &'a [u8],
-        electricity_bucket: &'a [u16],
-        electricity_buckets: usize,
-        fuel_bucket: &'a [u16],
-        fuel_buckets: usize,
-    ) -> Self {
+    /// Nothing yet.
+    pub fn new(site: &'a Site, electricity: &'a Meter, fuel: Option<&'a Meter>) -> Self {
         Self {
-            month0,
-            electricity_bucket,
-            fuel_bucket,
+            site,
+            electricity_meter: electricity,
+            fuel_meter: fuel,
             months: [Sums::default(); 12],
-            electricity_kwh: vec![0.0; electricity_buckets],
-            fuel_kwh: vec![0.0; fuel_buckets],
+            electricity: electricity.zero(),
+            fuel: fuel.map(Meter::zero),
+            hours: 0,
             min_indoor_c: f64::INFINITY,
             peak_electric_kw: 0.0,
             hours_backup: 0,
             hours_short: 0,
-            hours_repaired: 0,
         }
     }
 
@@ -63,17 +59,18 @@ impl<'a> Totals<'a> {
 
 impl Sink for Totals<'_> {
     fn take(&mut self, hour: usize, row: &Row) {
-        self.months[usize::from(self.month0[hour])].add(row);
+        self.months[usize::from(self.site.month0[hour])].add(row);
         let electricity_kwh = row.electricity_kwh();
-        self.electricity_kwh[usize::from(self.electricity_bucket[hour])] += electricity_kwh;
-        if let Some(&bucket) = self.fuel_bucket.get(hour) {
-            self.fuel_kwh[usize::from(bucket)] += row.fuel_kwh;
+        let bought = |import_kwh| Flows { import_kwh, export_kwh: 0.0 };
+        self.electricity.record(self.electricity_meter, hour, bought(electricity_kwh));
+        if let (Some(meter), Some(reading)) = (self.fuel_meter, &mut self.fuel) {
+            reading.record(meter, hour, bought(row.fuel_kwh));
         }
+        self.hours += 1;
         self.min_indoor_c = self.min_indoor_c.min(row.indoor_c);
         self.peak_electric_kw = self.peak_electric_kw.max(electricity_kwh);
         let backed = row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION);
         self.hours_backup += u32::from(backed);
         self.hours_short += u32::from(row.flags.has(Flags::SHORT));
-        self.hours_repaired += u32::from(row.flags.has(Flags::WEATHER_REPAIRED));
     }
 }
