@@ -183,3 +183,23 @@ impl Helmholtz {
         }
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn every_coefficient_file_is_read_and_agrees_with_the_facts() {
+        for refrigerant in Refrigerant::ALL {
+            let held = Helmholtz::new(refrigerant).unwrap();
+            let facts = refrigerant.facts();
+            assert_eq!(held.refrigerant(), refrigerant);
+            assert!((held.molar_mass * 1000.0 - facts.molar_mass_g_per_mol).abs() < 1e-9);
+            assert_eq!(
+                held.critical_temperature_k - 273.15,
+                facts.critical_temperature_c
+            );
+            assert_eq!(held.critical_pressure_kpa, facts.critical_pressure_kpa);
+        }
+    }
+}
