@@ -11,6 +11,7 @@ pub mod units;
 pub mod air;
 pub mod document;
 pub mod refrigerant;
+pub mod series;
 pub mod weather;
 // rank 2: the parts of a system
 pub mod carbon;
