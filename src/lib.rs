@@ -11,6 +11,7 @@ pub mod units;
 pub mod air;
 pub mod document;
 pub mod refrigerant;
+pub mod series;
 pub mod weather;
 // rank 2: the parts of a system
 pub mod carbon;
@@ -20,7 +21,7 @@ pub mod home;
 pub mod source;
 pub mod tariff;
 // rank 3: the hours
-pub mod year;
+// pub mod year;
 // rank 4: what the hours add up to
 pub mod bill;
 pub mod plan;
