@@ -4,12 +4,12 @@ use std::sync::Arc;
 
 use chrono_tz::Tz;
 
-use super::outcome::{Outcome, YearOutcome, costs_of};
+use super::outcome::{Outcome, YearOutcome, price};
 use crate::bill::Connection;
 use crate::problem::Problems;
 use crate::tariff::{Meter, Tariff};
 use crate::units::Currency;
-use crate::year::{Ledger, Plan, Site, State, System, Totals, run};
+use crate::year::{Ledger, Metered, Plan, Site, State, System, Totals, run};
 
 /// One home's weather, and the systems that could heat it.
 #[derive(Debug, Clone)]
@@ -75,24 +75,22 @@ impl Case {
         mut ledger: Option<&mut Ledger>,
     ) -> Result<Outcome, Problems> {
         let site = &*self.site;
-        let mut state = State::at_rest(&contender.system, contender.indoor_c);
+        let (system, plan) = (&contender.system, &contender.plan);
+        let mut state = State::at_rest(system, contender.indoor_c);
+        let mut metered = Metered::new(
+            &contender.electricity.meter,
+            contender.fuel.as_ref().map(|fuel| &*fuel.meter),
+        );
         let mut years = Vec::with_capacity(site.years.len());
         for (year, hours) in &site.years {
-            let mut totals = Totals::new(
-                site,
-                &contender.electricity.meter,
-                contender.fuel.as_ref().map(|fuel| &*fuel.meter),
-            );
-            let (system, plan, hours) = (&contender.system, &contender.plan, hours.clone());
-            match ledger.as_deref_mut() {
-                Some(ledger) => {
-                    run(site, system, plan, hours, &mut state, &mut (&mut totals, ledger));
-                }
-                None => run(site, system, plan, hours, &mut state, &mut totals),
-            }
-            years.push(YearOutcome::new(*year, &totals, costs_of(contender, &totals)?));
+            let mut totals = Totals::new(&site.month0);
+            let mut sink = (&mut totals, &mut metered, ledger.as_deref_mut());
+            run(site, system, plan, hours.clone(), &mut state, &mut sink);
+            years.push(YearOutcome::new(*year, &totals));
         }
-        Ok(Outcome { years })
+        let Metered { electricity, fuel, .. } = metered;
+        let costs = price(contender, &site.years, &electricity, fuel.as_ref())?;
+        Ok(Outcome { years, electricity, fuel, costs })
     }
 }
 

@@ -1,5 +1,8 @@
 //! What a system's years came to.
 
+use std::ops::Range;
+
+use rust_decimal::Decimal;
 use rust_decimal::prelude::ToPrimitive;
 
 use super::case::{Account, Contender};
@@ -8,8 +11,8 @@ use crate::problem::Problems;
 use crate::tariff::Reading;
 use crate::year::{Sums, Totals};
 
-/// Money of a year, in currency units.
-#[derive(Debug, Clone, Copy, Default, PartialEq)]
+/// Money of a mean year, in currency units.
+#[derive(Debug, Clone, Default, PartialEq)]
 pub struct Costs {
     /// Everything.
     pub total: f64,
@@ -21,6 +24,8 @@ pub struct Costs {
     pub tax: f64,
     /// Total of each civil month.
     pub months: [f64; 12],
+    /// Total of each year of the weather.
+    pub by_year: Vec<f64>,
 }
 
 /// One year of a system.
@@ -34,12 +39,6 @@ pub struct YearOutcome {
     pub months: [Sums; 12],
     /// Sums of the year.
     pub sums: Sums,
-    /// Money.
-    pub costs: Costs,
-    /// What the electricity meter read.
-    pub electricity: Reading,
-    /// What the fuel meter read.
-    pub fuel: Option<Reading>,
     /// Lowest indoor temperature, °C.
     pub min_indoor_c: f64,
     /// Greatest hourly mean of electric power, kW.
@@ -51,15 +50,12 @@ pub struct YearOutcome {
 }
 
 impl YearOutcome {
-    pub(super) fn new(year: i32, totals: &Totals<'_>, costs: Costs) -> Self {
+    pub(super) fn new(year: i32, totals: &Totals<'_>) -> Self {
         Self {
             year,
             hours: totals.hours,
             months: totals.months,
             sums: totals.all(),
-            costs,
-            electricity: totals.electricity.clone(),
-            fuel: totals.fuel.clone(),
             min_indoor_c: totals.min_indoor_c,
             peak_electric_kw: totals.peak_electric_kw,
             hours_backup: totals.hours_backup,
@@ -73,6 +69,12 @@ impl YearOutcome {
 pub struct Outcome {
     /// Year by year.
     pub years: Vec<YearOutcome>,
+    /// What the electricity meter read over all years.
+    pub electricity: Reading,
+    /// What the fuel meter read over all years.
+    pub fuel: Option<Reading>,
+    /// Money of a mean year.
+    pub costs: Costs,
 }
 
 impl Outcome {
@@ -90,27 +92,30 @@ impl Outcome {
         mean
     }
 
-    /// Cost of a mean year.
-    pub fn cost(&self) -> f64 {
-        self.mean(|year| year.costs.total)
+    /// Sums of a civil month of a mean year.
+    pub fn mean_month(&self, month0: usize) -> Sums {
+        let mut mean = Sums::default();
+        for year in &self.years {
+            mean.add_scaled(&year.months[month0], 1.0 / self.years.len() as f64);
+        }
+        mean
     }
 }
 
-/// What the readings of a year cost under a contender's tariffs.
-pub(super) fn costs_of(contender: &Contender, totals: &Totals<'_>) -> Result<Costs, Problems> {
-    price(contender, &totals.electricity, totals.fuel.as_ref())
-}
-
-/// Prices readings under a contender's tariffs.
+/// Prices readings of all years under a contender's tariffs.
+///
+/// # Errors
+/// When a reading is not a number or below 0.
 pub(super) fn price(
     contender: &Contender,
+    years: &[(i32, Range<usize>)],
     electricity: &Reading,
     fuel: Option<&Reading>,
 ) -> Result<Costs, Problems> {
-    let mut costs = Costs::default();
-    add(&mut costs, &bill(contender, &contender.electricity, electricity)?);
+    let mut costs = Costs { by_year: vec![0.0; years.len()], ..Costs::default() };
+    add(&mut costs, years, &bill(contender, &contender.electricity, electricity)?);
     if let (Some(account), Some(reading)) = (&contender.fuel, fuel) {
-        add(&mut costs, &bill(contender, account, reading)?);
+        add(&mut costs, years, &bill(contender, account, reading)?);
     }
     Ok(costs)
 }
@@ -119,14 +124,21 @@ fn bill(contender: &Contender, account: &Account, reading: &Reading) -> Result<B
     price_reading(&account.tariff, &account.meter, reading, contender.connection())
 }
 
-fn add(costs: &mut Costs, bill: &Bill) {
-    // Decimal amounts of a household are far inside what an f64 holds exactly to the cent.
-    let number = |amount: rust_decimal::Decimal| amount.to_f64().unwrap_or(f64::NAN);
-    costs.total += number(bill.total());
-    costs.energy += number(bill.energy());
-    costs.standing += number(bill.standing() + bill.demand());
-    costs.tax += bill.tax().map_or(0.0, number);
+/// Decimal amounts of a household are far inside what an `f64` holds exactly to the cent.
+fn number(amount: Decimal) -> f64 {
+    amount.to_f64().unwrap_or(f64::NAN)
+}
+
+fn add(costs: &mut Costs, years: &[(i32, Range<usize>)], bill: &Bill) {
+    let count = years.len() as f64;
+    costs.total += number(bill.total()) / count;
+    costs.energy += number(bill.energy() + bill.export().unwrap_or_default()) / count;
+    costs.standing += number(bill.standing() + bill.demand()) / count;
+    costs.tax += bill.tax().map_or(0.0, number) / count;
     for month in &bill.months {
-        costs.months[month.month0] += number(month.amount);
+        costs.months[month.month0] += number(month.amount) / count;
+        // A few hours of a UTC year can fall into the civil year beside it: they stay with their weather year.
+        let place = years.partition_point(|(year, _)| *year < month.year).min(years.len() - 1);
+        costs.by_year[place] += number(month.amount);
     }
 }

@@ -31,16 +31,3 @@ impl Sink for Ledger {
     }
 }
 
-/// Two sinks at once.
-impl<A: Sink, B: Sink> Sink for (A, B) {
-    fn take(&mut self, hour: usize, row: &Row) {
-        self.0.take(hour, row);
-        self.1.take(hour, row);
-    }
-}
-
-impl<S: Sink> Sink for &mut S {
-    fn take(&mut self, hour: usize, row: &Row) {
-        (**self).take(hour, row);
-    }
-}

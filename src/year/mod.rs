@@ -6,6 +6,7 @@
 //! the state carried over are the year.
 
 mod ledger;
+mod metered;
 mod row;
 mod site;
 mod step;
@@ -13,6 +14,7 @@ mod system;
 mod totals;
 
 pub use ledger::Ledger;
+pub use metered::Metered;
 pub use row::{COLUMNS, Column, Flags, Row, Sums};
 pub use site::{Plan, Signal, Site};
 pub use step::{DutyKind, Probe, Unwatched, run, step};
@@ -23,4 +25,28 @@ pub use totals::Totals;
 pub trait Sink {
     /// Takes the row of an hour of the axis.
     fn take(&mut self, hour: usize, row: &Row);
+}
+
+impl<S: Sink> Sink for &mut S {
+    fn take(&mut self, hour: usize, row: &Row) {
+        (**self).take(hour, row);
+    }
+}
+
+/// A sink that may not be there.
+impl<S: Sink> Sink for Option<S> {
+    fn take(&mut self, hour: usize, row: &Row) {
+        if let Some(sink) = self {
+            sink.take(hour, row);
+        }
+    }
+}
+
+/// Three sinks at once.
+impl<A: Sink, B: Sink, C: Sink> Sink for (A, B, C) {
+    fn take(&mut self, hour: usize, row: &Row) {
+        self.0.take(hour, row);
+        self.1.take(hour, row);
+        self.2.take(hour, row);
+    }
 }

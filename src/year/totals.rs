@@ -1,22 +1,14 @@
-//! A sink that keeps sums by month, what the meters read, and the extremes.
+//! A sink that keeps sums by month and the extremes.
 
 use super::Sink;
 use super::row::{Flags, Row, Sums};
-use super::site::Site;
-use crate::tariff::{Flows, Meter, Reading};
 
-/// Sums of a stretch of hours: by month and by meter, with the extremes.
+/// Sums of a stretch of hours by civil month, with the extremes.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Totals<'a> {
-    site: &'a Site,
-    electricity_meter: &'a Meter,
-    fuel_meter: Option<&'a Meter>,
+    month0: &'a [u8],
     /// Sums of each civil month.
     pub months: [Sums; 12],
-    /// What the electricity meter read.
-    pub electricity: Reading,
-    /// What the fuel meter read.
-    pub fuel: Option<Reading>,
     /// Hours taken.
     pub hours: u32,
     /// Lowest indoor temperature, °C.
@@ -30,15 +22,11 @@ pub struct Totals<'a> {
 }
 
 impl<'a> Totals<'a> {
-    /// Nothing yet.
-    pub fn new(site: &'a Site, electricity: &'a Meter, fuel: Option<&'a Meter>) -> Self {
+    /// Nothing yet; the column gives the civil month from 0 of every hour of the axis.
+    pub fn new(month0: &'a [u8]) -> Self {
         Self {
-            site,
-            electricity_meter: electricity,
-            fuel_meter: fuel,
+            month0,
             months: [Sums::default(); 12],
-            electricity: electricity.zero(),
-            fuel: fuel.map(Meter::zero),
             hours: 0,
             min_indoor_c: f64::INFINITY,
             peak_electric_kw: 0.0,
@@ -59,16 +47,10 @@ impl<'a> Totals<'a> {
 
 impl Sink for Totals<'_> {
     fn take(&mut self, hour: usize, row: &Row) {
-        self.months[usize::from(self.site.month0[hour])].add(row);
-        let electricity_kwh = row.electricity_kwh();
-        let bought = |import_kwh| Flows { import_kwh, export_kwh: 0.0 };
-        self.electricity.record(self.electricity_meter, hour, bought(electricity_kwh));
-        if let (Some(meter), Some(reading)) = (self.fuel_meter, &mut self.fuel) {
-            reading.record(meter, hour, bought(row.fuel_kwh));
-        }
+        self.months[usize::from(self.month0[hour])].add(row);
         self.hours += 1;
         self.min_indoor_c = self.min_indoor_c.min(row.indoor_c);
-        self.peak_electric_kw = self.peak_electric_kw.max(electricity_kwh);
+        self.peak_electric_kw = self.peak_electric_kw.max(row.electricity_kwh());
         let backed = row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION);
         self.hours_backup += u32::from(backed);
         self.hours_short += u32::from(row.flags.has(Flags::SHORT));
