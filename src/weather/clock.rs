@@ -31,6 +31,8 @@ pub(super) struct Instants {
     pub zone_known: bool,
     /// For a typical year, the year each month comes from, January first.
     pub stitched: Option<[i32; 12]>,
+    /// Whether the file calls itself a typical year.
+    pub called_typical: bool,
 }
 
 /// Resolves all stamps.
@@ -90,6 +92,7 @@ pub(super) fn instants(
         zone,
         zone_known,
         stitched,
+        called_typical: layout.typical,
     }
 }
 

@@ -1,5 +1,7 @@
 //! Readings onto whole hours: sorted, duplicates dropped, finer ones averaged, coarser ones joined by straight lines.
 
+use std::sync::Arc;
+
 use chrono::DateTime;
 
 use super::clock::Instants;
@@ -21,6 +23,8 @@ const SAME_K: f64 = 0.05;
 /// Hours in a row, still with holes. Missing is `NaN`; a line is 0 where no row fell into the hour.
 #[derive(Debug, Clone)]
 pub(super) struct Hours {
+    /// The files, each with its first hour.
+    pub files: Vec<(usize, Arc<str>)>,
     pub start_s: i64,
     pub outdoor_c: Vec<f64>,
     pub humidity: Option<Vec<f64>>,
@@ -31,6 +35,8 @@ pub(super) struct Hours {
     pub zone: Zone,
     pub zone_known: bool,
     pub stitched: Option<[i32; 12]>,
+    /// Whether the file calls itself a typical year.
+    pub called_typical: bool,
     /// Hours in which an instant occurs more than once.
     pub duplicate_hours: usize,
     /// Hours made by joining coarser readings.
@@ -46,16 +52,34 @@ impl Hours {
         )
     }
 
-    /// The line of the hour, or of the last one before it that has any.
-    pub(super) fn line_before(&self, i: usize) -> usize {
+    /// The file and line of the hour, or of the last one before it that has any.
+    pub(super) fn place(&self, i: usize) -> Place {
         let seen = self.line.get(..=i).unwrap_or(&self.line);
-        let line = seen
+        let (at, line) = seen
             .iter()
+            .enumerate()
             .rev()
-            .find(|&&line| line > 0)
-            .copied()
-            .unwrap_or(1);
-        usize::try_from(line).unwrap_or(1)
+            .find(|&(_, &line)| line > 0)
+            .map_or((0, 1), |(at, &line)| (at, line));
+        let file = self.files.iter().rev().find(|(from, _)| *from <= at);
+        Place {
+            file: file.map(|(_, name)| Arc::clone(name)),
+            line: usize::try_from(line).ok(),
+            ..Place::default()
+        }
+    }
+
+    /// The place of the whole series: its first file.
+    pub(super) fn whole(&self) -> Place {
+        Place {
+            file: self.files.first().map(|(_, name)| Arc::clone(name)),
+            ..Place::default()
+        }
+    }
+
+    /// One past the last hour, seconds since 1970.
+    pub(super) fn end_s(&self) -> i64 {
+        self.start_s + i64::try_from(self.outdoor_c.len()).unwrap_or(0) * HOUR_S
     }
 }
 
@@ -84,6 +108,7 @@ pub(super) fn hours(
         zone,
         zone_known,
         stitched,
+        called_typical,
     } = instants;
     if step_s > COARSEST_STEP_S {
         return Err(Problem::new(
@@ -148,6 +173,11 @@ pub(super) fn hours(
     };
     let fill = |values: &mut Vec<f64>| averaged(&order, &index, values, number, expected);
     let mut hours = Hours {
+        files: place
+            .file
+            .iter()
+            .map(|name| (0, Arc::clone(name)))
+            .collect(),
         start_s: base * HOUR_S - phase,
         outdoor_c: fill(&mut values.outdoor_c),
         humidity: values.humidity.as_mut().map(fill),
@@ -158,6 +188,7 @@ pub(super) fn hours(
         zone,
         zone_known,
         stitched,
+        called_typical,
         duplicate_hours,
         joined_hours: 0,
     };

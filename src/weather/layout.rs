@@ -27,6 +27,8 @@ pub(super) struct Layout {
     /// Fields a row has.
     pub fields: usize,
     pub columns: Columns,
+    /// Whether a line above the readings calls them a typical or reference year.
+    pub typical: bool,
 }
 
 /// One line that is neither blank nor a remark.
@@ -95,6 +97,7 @@ pub(super) fn layout(
             headings,
             fields,
             columns,
+            typical: calls_itself_typical(text.get(..first.start).unwrap_or_default()),
         })
     };
     let mut layout = if all_numbered(options) {
@@ -311,6 +314,18 @@ fn sniff(lines: &[Line]) -> Option<u8> {
         .rev()
         .max_by_key(|&&delimiter| score(delimiter))?;
     (score(*best) > 0).then_some(*best)
+}
+
+/// Whether the text above the readings says that the year is a typical one.
+fn calls_itself_typical(above: &str) -> bool {
+    let above = above.to_lowercase();
+    [
+        "typical year",
+        "typical meteorological year",
+        "reference year",
+    ]
+    .iter()
+    .any(|name| above.contains(name))
 }
 
 /// Splits one line, quotes respected.
