@@ -1,1 +1,3 @@
 //! The JSON contract as plain structs.
+
+pub mod cycle;

@@ -98,6 +98,19 @@ impl Equation {
         self.helmholtz.critical_pressure_kpa
     }
 
+    /// The critical state, at the critical temperature and density of the publication.
+    ///
+    /// # Errors
+    ///
+    /// [`PropertyError::NotConverged`] if the equation cannot be evaluated there.
+    pub fn critical_point(&self) -> Result<StatePoint, PropertyError> {
+        let helmholtz = &self.helmholtz;
+        helmholtz
+            .phase(helmholtz.critical_temperature_k, helmholtz.critical_density)
+            .map(|phase| self.point(phase, None))
+            .ok_or_else(|| self.not_converged("critical state", self.critical_pressure_kpa(), None))
+    }
+
     /// Lowest and highest temperature of saturation offered, °C.
     pub fn saturation_range_c(&self) -> (f64, f64) {
         (
