@@ -18,10 +18,9 @@ const REFERENCE_ENTROPY_KJ_PER_KG_K: f64 = 1.0;
 /// −73.15 °C, and no heat pump of a home works near here.
 pub(super) const LOWEST_TEMPERATURE_C: f64 = -70.0;
 
-/// Highest temperature of superheated vapour offered, °C. It lies above the last measured temperature
-/// of some publications (R1234yf 137 °C, R32 162 °C, R134a 182 °C): the cycle's least efficient corners
-/// lead there, and vapour at these densities is governed by its ideal-gas heat capacity, which all six
-/// publications extrapolate smoothly.
+/// Highest temperature of superheated vapour offered, °C. Some publications end lower (R1234yf 137 °C, R32
+/// 162 °C, R134a 182 °C); beyond, the formula extrapolates, as thin vapour is governed by its ideal-gas heat
+/// capacity. Only hopeless cycles lead there, and the cycle warns of a hot discharge long before.
 pub(super) const HIGHEST_TEMPERATURE_C: f64 = 250.0;
 
 /// Saturation is offered up to this far below the critical temperature, K; closer, the two densities

@@ -67,7 +67,7 @@ const CAUTION_A3: &str = "highly flammable (A3): charge limits, a protective zon
     drains and ignition sources, and siting follow local codes; only people licensed for flammable \
     refrigerants may open the circuit.";
 
-// GWP: IPCC AR4 WG1 Table 2.14 and AR5 WG1 Table 8.A.1 [from memory; the AR4 figures of R32, R410A and
+// GWP: IPCC AR4 WG1 Tables 2.14 and 2.15 and AR5 WG1 Table 8.A.1 [from memory; the AR4 figures of R32, R410A and
 // R134a agree with those in the fluid files of CoolProp 8.0.0]. Safety classes: ISO 817 [from memory].
 static R290: Facts = Facts {
     substance: "propane",
