@@ -80,6 +80,8 @@ bounds! {
     COLD_WATER_C = "cold-water temperature", 0.0 ..= 30.0, "°C";
     /// Rated output of a machine or a backup heater.
     OUTPUT_KW = "heat output", 0.1 ..= 100.0, "kW";
+    /// Output of a backup or immersion heater; 0 when there is none.
+    HEATER_KW = "electric heater", 0.0 ..= 50.0, "kW";
     /// Electric power of a pump, a fan or controls.
     AUXILIARY_KW = "auxiliary power", 0.0 ..= 2.0, "kW";
     /// Boiler efficiency on gross calorific value: a perfect condensing boiler cannot exceed 1.

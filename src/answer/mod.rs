@@ -1,11 +1,10 @@
 //! The JSON contract as plain structs, and the making of the estimate from what the runs came to.
 
 mod compose;
-mod cycle;
+pub mod cycle;
 mod estimate;
 
 pub use compose::{Told, compose};
-pub use cycle::{CycleAnswer, CycleStateAnswer};
 pub use estimate::{
     Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };

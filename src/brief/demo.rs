@@ -13,8 +13,8 @@ embedded![
     "briefs/terrace.toml",
     "briefs/machines/air_r290_small.toml",
     "briefs/machines/ground_variable.toml",
-    "tariffs/electricity_flat.toml",
-    "tariffs/gas_flat.toml",
+    "tariffs/flat_electricity.toml",
+    "tariffs/flat_gas.toml",
     "weather_samples/morvane_sound.csv",
 ];
 
