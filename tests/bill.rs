@@ -59,6 +59,7 @@ fn tariff(fuel: Fuel, prices: Prices) -> Tariff {
         billing: Span::Year,
         holidays: Holidays::default(),
         prices: vec![prices],
+        findings: Vec::new(),
     }
 }
 

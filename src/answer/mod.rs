@@ -1,6 +1,7 @@
 //! The JSON contract as plain structs, and the making of the estimate from what the runs came to.
 
 mod compose;
+pub mod cycle;
 mod estimate;
 
 pub use compose::{Told, compose};

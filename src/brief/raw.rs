@@ -132,6 +132,8 @@ pub(super) struct Energies {
     pub electricity: Option<Leaf<String>>,
     /// Gas tariff, relative to the brief.
     pub gas: Option<Leaf<String>>,
+    /// Published set of carbon factors by name.
+    pub carbon: Option<Leaf<String>>,
     /// Carbon of a kilowatt-hour of electricity; give carbon_scope with it.
     pub electricity_carbon: Option<Leaf<CarbonFactor>>,
     /// Carbon of a kilowatt-hour of gas on gross calorific value; give carbon_scope with it.

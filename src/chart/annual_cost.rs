@@ -1,11 +1,10 @@
 //! Cost of a year, system by system: one bar each, split into energy, standing charges and tax.
 
-use super::frame::Axis;
-use super::geometry::Point;
+use super::bars::{self, Bar, Part};
 use super::numbers::{self, Marks, money_unit};
-use super::palette::{AXIS, CORAL, Colour, Dash, GRID, Hatch, INK, MUTED, NAVY, PERIWINKLE, WHITE};
-use super::scene::{Anchor, BODY, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
-use super::{ChartError, Picture, finite, font, font::Weight, named};
+use super::palette::{CORAL, Hatch, NAVY, PERIWINKLE};
+use super::scene::Scene;
+use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "cost of a year";
 
@@ -34,27 +33,17 @@ pub struct SystemCost {
 }
 
 impl SystemCost {
-    fn parts(&self) -> [f64; 3] {
-        [self.energy, self.standing, self.tax]
-    }
     /// The whole bill.
     pub fn total(&self) -> f64 {
         self.energy + self.standing + self.tax
     }
 }
 
-/// Names and looks of the three parts.
-const PARTS: [(&str, Colour, Hatch); 3] = [
+const PARTS: [Part; 3] = [
     ("Energy", NAVY, Hatch::Plain),
     ("Standing charges", PERIWINKLE, Hatch::Plain),
     ("Tax", CORAL, Hatch::Rising),
 ];
-
-const ROW: f64 = 66.0;
-const BAR: f64 = 28.0;
-/// How totals and differences are set.
-const TOTAL: Type = Type::new(17.0, Weight::Bold, INK);
-const DIFFERENCE: Type = Type::new(SMALL + 1.0, Weight::Regular, INK);
 
 /// Draws the cost of a year.
 ///
@@ -67,198 +56,54 @@ pub fn annual_cost(data: &AnnualCost, marks: &Marks) -> Result<Picture, ChartErr
             missing: "no system was given",
         });
     }
-    for system in &data.systems {
-        finite(
-            PICTURE,
-            [
-                (
-                    format!("energy of “{}”", system.label).as_str(),
-                    system.energy,
-                ),
-                (
-                    format!("standing charges of “{}”", system.label).as_str(),
-                    system.standing,
-                ),
-                (format!("tax of “{}”", system.label).as_str(), system.tax),
-            ],
-        )?;
+    for s in &data.systems {
+        for (part, value) in [
+            ("energy", s.energy),
+            ("standing charges", s.standing),
+            ("tax", s.tax),
+        ] {
+            finite(
+                PICTURE,
+                [(format!("{part} of “{}”", s.label).as_str(), value)],
+            )?;
+        }
     }
     let money = |v: f64| marks.money(&data.currency, v);
     let today = data.systems.iter().find(|s| s.today);
-
+    let compared = today.is_some() && data.systems.len() > 1;
+    let subtitle = if compared {
+        "Bills of one year by system. The dashed mark is what today’s system costs."
+    } else {
+        "Bills of one year by system."
+    };
+    let bars: Vec<Bar<'_>> = data
+        .systems
+        .iter()
+        .map(|s| Bar {
+            label: &s.label,
+            today: s.today,
+            parts: vec![s.energy, s.standing, s.tax],
+            remark: match today {
+                Some(today) if !s.today => bars::difference(s.total(), today.total(), &money),
+                _ => String::new(),
+            },
+        })
+        .collect();
     let title = "What a year costs to run";
     let mut scene = Scene::new(f64::MAX);
-    let below_title = scene.heading(title, &subtitle(data, today));
-    let entries = PARTS.map(|(name, colour, hatch)| (Swatch::Area(colour, hatch), name));
-    let top = scene.key(&entries, MARGIN, below_title, WIDTH - 2.0 * MARGIN) + 6.0;
-    let bottom = top + ROW * data.systems.len() as f64;
-    scene.height = (bottom + 52.0).ceil();
-
-    // Parts above and below nothing are stacked each on its own side of the zero line.
-    let side =
-        |s: &SystemCost, sign: f64| s.parts().iter().map(|p| (sign * p).max(0.0)).sum::<f64>();
-    let high = data
-        .systems
-        .iter()
-        .map(|s| side(s, 1.0))
-        .fold(0.0, f64::max);
-    let low = -data
-        .systems
-        .iter()
-        .map(|s| side(s, -1.0))
-        .fold(0.0, f64::max);
-    let unit = money_unit(&data.currency);
-    let axis = Axis::tight(
-        &format!("Cost of a year, {unit}"),
-        low,
-        if high > low { high } else { low + 1.0 },
-        5,
-        marks,
-    );
-    // Two columns at the right, as wide as their widest text; the bars take the rest.
-    let widest = |set: Type, text: &dyn Fn(&SystemCost) -> String| {
-        data.systems
-            .iter()
-            .map(|s| set.width(&text(s)))
-            .fold(0.0, f64::max)
-    };
-    let words_wide = widest(DIFFERENCE, &|s| difference(s, today, &money));
-    let total_wide = widest(TOTAL, &|s| money(s.total()));
-    let words_at = WIDTH - MARGIN - words_wide;
-    let total_at = words_at - if words_wide > 0.0 { 14.0 } else { 0.0 };
-    let left = MARGIN;
-    let right = (total_at - total_wide - 16.0).max(left + 120.0);
-    let at = |v: f64| left + (v - axis.low) / (axis.high - axis.low) * (right - left);
-
-    for (value, text) in &axis.ticks {
-        let x = at(*value);
-        if *value != 0.0 {
-            scene.line(&[(x, top), (x, bottom)], GRID, 1.0);
-        }
-        let x_text = x.max(MARGIN + Type::small().width(text) / 2.0 - 8.0);
-        scene.tick(text, (x_text, bottom + 18.0), Anchor::Middle);
-    }
-    scene.line(&[(left, bottom), (right, bottom)], AXIS, 1.2);
-    scene.text(
-        &axis.title,
-        (right, bottom + 38.0),
-        Anchor::End,
-        Type::small(),
-    );
-
-    for (i, system) in data.systems.iter().enumerate() {
-        let row = top + ROW * i as f64;
-        let bar = row + 26.0;
-        draw_name(&mut scene, system, row);
-        draw_bar(&mut scene, system, bar, &at, &money);
-        if let Some(today) = today.filter(|t| !std::ptr::eq(*t, system)) {
-            let mark = at(today.total());
-            let ends = [(mark, bar - 4.0), (mark, bar + BAR + 4.0)];
-            scene.line(&ends, WHITE, 4.0);
-            scene.dashed(&ends, INK, 2.0, Dash::Short);
-        }
-        let base = bar + BAR / 2.0 + 5.4;
-        scene.text(&money(system.total()), (total_at, base), Anchor::End, TOTAL);
-        let words = difference(system, today, &money);
-        scene.text(&words, (words_at, base), Anchor::Start, DIFFERENCE);
-    }
-    let alt = alt(data, today, &money);
-    Ok(Picture::new(title, alt, scene))
+    let top = scene.heading(title, subtitle);
+    let axis = format!("Cost of a year, {}", money_unit(&data.currency));
+    bars::draw(&mut scene, top, &bars, &PARTS, &axis, &money, marks);
+    Ok(Picture::new(title, alt(data, &bars, &money), scene))
 }
 
-fn subtitle(data: &AnnualCost, today: Option<&SystemCost>) -> String {
-    match today {
-        Some(_) if data.systems.len() > 1 => {
-            "Bills of one year by system. The dashed mark is what today’s system costs.".into()
-        }
-        _ => "Bills of one year by system.".into(),
-    }
-}
-
-fn draw_name(scene: &mut Scene, system: &SystemCost, row: f64) {
-    let room = WIDTH - 2.0 * MARGIN - 70.0;
-    let weight = if system.today {
-        Weight::Bold
-    } else {
-        Weight::Regular
-    };
-    let set = Type::new(BODY, weight, INK);
-    let name = font::fit(named(&system.label), set.size, set.weight, room);
-    scene.plate(&name, (MARGIN, row + 18.0), Anchor::Start, set);
-    if system.today {
-        let tag = Type::new(SMALL - 1.0, Weight::Bold, MUTED);
-        let x = MARGIN + set.width(&name) + 12.0;
-        let pill = Rect {
-            left: x,
-            top: row + 4.0,
-            right: x + tag.width("today") + 14.0,
-            bottom: row + 22.0,
-        };
-        scene.area(&pill.corners(), WHITE, 1.0);
-        scene.outline(&pill.corners(), AXIS, 1.2);
-        scene.text("today", (x + 7.0, row + 17.2), Anchor::Start, tag);
-    }
-}
-
-fn draw_bar(
-    scene: &mut Scene,
-    system: &SystemCost,
-    y: f64,
-    at: &impl Fn(f64) -> f64,
-    money: &impl Fn(f64) -> String,
-) {
-    let (mut up, mut down) = (0.0, 0.0);
-    scene.line(&[(at(0.0), y - 4.0), (at(0.0), y + BAR + 4.0)], INK, 1.4);
-    for (value, (_, colour, hatch)) in system.parts().into_iter().zip(PARTS) {
-        let from = if value < 0.0 { &mut down } else { &mut up };
-        let (a, b) = (at(*from), at(*from + value));
-        *from += value;
-        let (a, b) = (a.min(b), a.max(b));
-        if b - a < 0.05 {
-            continue;
-        }
-        let piece: [Point; 4] = [(a, y), (b, y), (b, y + BAR), (a, y + BAR)];
-        scene.hatched(&piece, colour, hatch);
-        scene.line(&[(b, y), (b, y + BAR)], WHITE, 1.2);
-        let set = Type::new(SMALL, Weight::Regular, colour.text_on());
-        let text = money(value);
-        if hatch == Hatch::Plain && set.width(&text) + 12.0 < b - a {
-            scene.text(
-                &text,
-                ((a + b) / 2.0, y + BAR / 2.0 + 4.6),
-                Anchor::Middle,
-                set,
-            );
-        }
-    }
-}
-
-fn difference(
-    system: &SystemCost,
-    today: Option<&SystemCost>,
-    money: &impl Fn(f64) -> String,
-) -> String {
-    match today {
-        None => String::new(),
-        Some(_) if system.today => String::new(),
-        Some(today) => {
-            let saved = today.total() - system.total();
-            match money(saved.abs()) {
-                same if same == money(0.0) => "about the same".into(),
-                less if saved > 0.0 => format!("{less} less"),
-                more => format!("{more} more"),
-            }
-        }
-    }
-}
-
-fn alt(data: &AnnualCost, today: Option<&SystemCost>, money: &impl Fn(f64) -> String) -> String {
-    let count = data.systems.len();
+fn alt(data: &AnnualCost, bars: &[Bar<'_>], money: &dyn Fn(f64) -> String) -> String {
     let mut out = format!(
-        "Bar chart of what a year costs to run, {count} {}.",
-        if count == 1 { "system" } else { "systems" }
+        "Bar chart of what a year costs to run, {} {}.",
+        bars.len(),
+        if bars.len() == 1 { "system" } else { "systems" }
     );
-    for system in &data.systems {
+    for (system, bar) in data.systems.iter().zip(bars) {
         let mut parts = vec![
             format!("energy {}", money(system.energy)),
             format!("standing charges {}", money(system.standing)),
@@ -267,15 +112,11 @@ fn alt(data: &AnnualCost, today: Option<&SystemCost>, money: &impl Fn(f64) -> St
             parts.push(format!("tax {}", money(system.tax)));
         }
         let when = if system.today { " (today)" } else { "" };
-        let against = match difference(system, today, money) {
-            words if words.is_empty() => String::new(),
-            words if words == "about the same" => ", about the same as today".into(),
-            words => format!(", {words} than today"),
-        };
         out += &format!(
-            " {}{when}: {}{against}, made of {}.",
+            " {}{when}: {}{}, made of {}.",
             named(&system.label),
             money(system.total()),
+            bars::against_today(&bar.remark),
             numbers::list(&parts)
         );
     }

@@ -206,6 +206,25 @@ impl Frame {
         }
     }
 
+    /// A line on a white edge, so that it stands out from a cloud or from areas.
+    pub(crate) fn cased(
+        &self,
+        scene: &mut Scene,
+        values: &[(f64, f64)],
+        colour: Colour,
+        width: f64,
+        dash: Dash,
+    ) {
+        self.line(
+            scene,
+            values,
+            super::palette::WHITE,
+            width + 3.0,
+            Dash::Solid,
+        );
+        self.line(scene, values, colour, width, dash);
+    }
+
     /// A level line across the plot.
     pub(crate) fn level(&self, scene: &mut Scene, y: f64, colour: Colour, dash: Dash) {
         let y = self.at_y(y);

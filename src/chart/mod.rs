@@ -19,6 +19,8 @@
 //! 5. Add a realistic and the hostile cases to `tests/chart_gallery.rs`: it checks that labels are apart and on the
 //!    canvas and that the SVG is well-formed, and writes the PNG for you to look at.
 
+mod bars;
+mod cloud;
 mod font;
 mod frame;
 mod geometry;
@@ -28,10 +30,22 @@ mod palette;
 mod scene;
 
 mod annual_cost;
+mod carbon_by_system;
+mod coldest_days;
+mod cop_year;
+mod demand_and_output;
+mod load_duration;
+mod monthly;
 mod pressure_enthalpy;
 
 pub use annual_cost::{AnnualCost, SystemCost, annual_cost};
+pub use carbon_by_system::{CarbonBySystem, SystemCarbon, carbon_by_system};
+pub use coldest_days::{ColdHour, ColdestDays, coldest_days};
+pub use cop_year::{CopSystem, CopYear, cop_year};
+pub use demand_and_output::{DemandAndOutput, demand_and_output};
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
+pub use load_duration::{LoadDuration, load_duration};
+pub use monthly::{Monthly, MonthlySystem, monthly};
 pub use numbers::Marks;
 pub use paint::PNG_PIXELS;
 pub use palette::Colour;
@@ -184,4 +198,9 @@ fn named(label: &str) -> &str {
     } else {
         label
     }
+}
+
+/// A name short enough to stand in a sentence of a subtitle.
+fn named_short(label: &str) -> String {
+    font::fit(named(label), scene::SMALL, font::Weight::Regular, 320.0)
 }

@@ -363,9 +363,9 @@ impl Scene {
     }
 
     /// Writes a key, one entry after the other, over as many lines as it takes; gives back the y below it.
-    pub(crate) fn key(
+    pub(crate) fn key<S: AsRef<str>>(
         &mut self,
-        entries: &[(Swatch, &str)],
+        entries: &[(Swatch, S)],
         left: f64,
         top: f64,
         room: f64,
@@ -374,7 +374,7 @@ impl Scene {
         let (line_height, swatch, gap) = (20.0, 26.0, 20.0);
         let (mut x, mut y) = (left, top);
         for (look, name) in entries {
-            let name = font::fit(name, set.size, set.weight, room - swatch - 6.0);
+            let name = font::fit(name.as_ref(), set.size, set.weight, room - swatch - 6.0);
             let wide = swatch + 6.0 + set.width(&name);
             if x > left && x + wide > left + room {
                 x = left;

@@ -4,6 +4,7 @@
 //! `run(&Args) -> Result<(), Failure>`. Text goes to stdout, findings and progress to stderr, and the exit status is 0
 //! done, 1 the input is wrong, 2 usage, 3 cannot write.
 
+mod cycle;
 mod failure;
 mod files;
 mod output;
@@ -31,7 +32,7 @@ struct Arguments {
 
 #[derive(Debug, Subcommand)]
 enum Command {
-    // Cycle(cycle::Args),
+    Cycle(cycle::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -44,7 +45,7 @@ pub fn run() -> ExitCode {
 }
 
 fn dispatch(command: &Command) -> Result<(), Failure> {
-    match *command {
-        // Command::Cycle(args) => cycle::run(args),
+    match command {
+        Command::Cycle(args) => cycle::run(args),
     }
 }

@@ -7,7 +7,7 @@
 mod diagram;
 mod inputs;
 
-pub use diagram::{Diagram, DiagramPoint, Isotherm, Leg, Process};
+pub use diagram::{Diagram, DiagramPoint, Leg, Process};
 pub use inputs::{
     CRITICAL_MARGIN_K, CycleInputs, LEAST_LIFT_K, MASS_FLOW_RANGE_KG_PER_S, SPREAD_RANGE_K,
 };
@@ -231,6 +231,13 @@ impl Cycle {
             ),
             facts.caution,
         )];
+        if facts.pseudo_pure {
+            findings.push(Finding::new(
+                Severity::Note,
+                format!("{} is a blend, computed as one substance", self.refrigerant),
+                "its bubble and dew point, 0.1 K apart, share one pressure; COP is good to 0.5 %",
+            ));
+        }
         let mut warn = |what: String, done: &str| {
             findings.push(Finding::new(Severity::Warning, what, done));
         };

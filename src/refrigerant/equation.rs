@@ -18,10 +18,9 @@ const REFERENCE_ENTROPY_KJ_PER_KG_K: f64 = 1.0;
 /// −73.15 °C, and no heat pump of a home works near here.
 pub(super) const LOWEST_TEMPERATURE_C: f64 = -70.0;
 
-/// Highest temperature of superheated vapour offered, °C. It lies above the last measured temperature
-/// of some publications (R1234yf 137 °C, R32 162 °C, R134a 182 °C): the cycle's least efficient corners
-/// lead there, and vapour at these densities is governed by its ideal-gas heat capacity, which all six
-/// publications extrapolate smoothly.
+/// Highest temperature of superheated vapour offered, °C. Some publications end lower (R1234yf 137 °C, R32
+/// 162 °C, R134a 182 °C); beyond, the formula extrapolates, as thin vapour is governed by its ideal-gas heat
+/// capacity. Only hopeless cycles lead there, and the cycle warns of a hot discharge long before.
 pub(super) const HIGHEST_TEMPERATURE_C: f64 = 250.0;
 
 /// Saturation is offered up to this far below the critical temperature, K; closer, the two densities
@@ -96,6 +95,19 @@ impl Equation {
     /// Critical pressure, kPa.
     pub fn critical_pressure_kpa(&self) -> f64 {
         self.helmholtz.critical_pressure_kpa
+    }
+
+    /// The critical state, at the critical temperature and density of the publication.
+    ///
+    /// # Errors
+    ///
+    /// [`PropertyError::NotConverged`] if the equation cannot be evaluated there.
+    pub fn critical_point(&self) -> Result<StatePoint, PropertyError> {
+        let helmholtz = &self.helmholtz;
+        helmholtz
+            .phase(helmholtz.critical_temperature_k, helmholtz.critical_density)
+            .map(|phase| self.point(phase, None))
+            .ok_or_else(|| self.not_converged("critical state", self.critical_pressure_kpa(), None))
     }
 
     /// Lowest and highest temperature of saturation offered, °C.

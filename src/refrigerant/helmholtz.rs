@@ -19,6 +19,7 @@ struct CoefficientFile {
     gas_constant_j_per_mol_k: f64,
     critical_temperature_k: f64,
     critical_pressure_kpa: f64,
+    critical_density_mol_per_m3: f64,
     record: PureRecord<MultiParameterRecord, ()>,
 }
 
@@ -48,6 +49,8 @@ pub(super) struct Helmholtz {
     pub critical_temperature_k: f64,
     /// Critical pressure, kPa.
     pub critical_pressure_kpa: f64,
+    /// Critical density, kg/m³.
+    pub critical_density: f64,
 }
 
 /// One phase at given temperature and density; enthalpy and entropy with the publication's own zero.
@@ -89,6 +92,7 @@ impl Helmholtz {
             molar_mass,
             critical_temperature_k: file.critical_temperature_k,
             critical_pressure_kpa: file.critical_pressure_kpa,
+            critical_density: file.critical_density_mol_per_m3 * molar_mass,
         })
     }
 

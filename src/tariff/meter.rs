@@ -71,7 +71,7 @@ pub struct Bucket {
 /// Sorts hours into buckets.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Meter {
-    bucket_of_hour: Vec<u32>,
+    bucket_of_hour: Vec<u16>,
     /// Currency units per gross kilowatt-hour without tax, where prices are hourly.
     hourly: Option<Vec<f64>>,
     segments: Vec<Segment>,
@@ -111,6 +111,15 @@ impl Meter {
             .zip(&days)
             .map(|((hour, &date), &days)| sorter.sort(hour, date, days))
             .collect();
+        if sorter.buckets.len() > usize::from(u16::MAX) {
+            return Err(Problem::new(
+                tariff.place.clone(),
+                format!("{} kinds of hour", sorter.buckets.len()),
+                format!("at most {}", u16::MAX),
+                "use fewer bands or fewer years",
+            )
+            .into());
+        }
         Ok(Self {
             bucket_of_hour,
             hourly,
@@ -136,7 +145,14 @@ impl Meter {
 
     /// The bucket of an hour.
     pub fn bucket(&self, hour: usize) -> Option<usize> {
-        self.bucket_of_hour.get(hour).map(|&bucket| bucket as usize)
+        self.bucket_of_hour
+            .get(hour)
+            .map(|&bucket| usize::from(bucket))
+    }
+
+    /// The bucket of every hour.
+    pub fn bucket_column(&self) -> &[u16] {
+        &self.bucket_of_hour
     }
 
     /// A reading of nothing.
@@ -157,7 +173,10 @@ impl Meter {
             .iter()
             .enumerate()
             .map(|(hour, &bucket)| {
-                let (signal, tax) = signals.get(bucket as usize).copied().unwrap_or_default();
+                let (signal, tax) = signals
+                    .get(usize::from(bucket))
+                    .copied()
+                    .unwrap_or_default();
                 let hourly = self.hourly.as_ref().and_then(|prices| prices.get(hour));
                 signal + hourly.unwrap_or(&0.0) * tax
             })
@@ -240,12 +259,12 @@ struct Sorter<'a> {
     kind_of_day: HashMap<(usize, NaiveDate), usize>,
     segments: Vec<Segment>,
     buckets: Vec<Bucket>,
-    known: HashMap<Key, u32>,
+    known: HashMap<Key, u16>,
 }
 
 impl Sorter<'_> {
     /// The bucket of an hour that is billed with `date` and makes up `days` of a day.
-    fn sort(&mut self, hour: &CivilHour, date: NaiveDate, days: f64) -> u32 {
+    fn sort(&mut self, hour: &CivilHour, date: NaiveDate, days: f64) -> u16 {
         let prices = self.tariff.in_force(date);
         let (year, month0) = (date.year(), date.month0() as usize);
         match self.segments.last_mut() {
@@ -276,7 +295,8 @@ impl Sorter<'_> {
             self.buckets.push(bucket);
             self.buckets.len() - 1
         });
-        let index = u32::try_from(index).unwrap_or(u32::MAX);
+        // Held by the check at the end of `Meter::new`.
+        let index = u16::try_from(index).unwrap_or(u16::MAX);
         self.known.insert(key, index);
         index
     }

@@ -6,6 +6,7 @@
 
 mod clock;
 mod coverage;
+mod file;
 mod meter;
 mod metering;
 mod rate;
@@ -14,6 +15,7 @@ pub use clock::{
     Days, Holidays, MINUTES, Season, When, Window, YearDay, clock, month_name, parse_clock,
 };
 pub use coverage::{Flaw, flaws};
+pub use file::TariffFields;
 pub use meter::{Bucket, Meter, Reading, Segment};
 pub use metering::{Flows, Metering};
 pub use rate::{Band, Covers, Demand, Rate, Span, Standing, StandingSpan, Step, Steps, Tax};
@@ -22,7 +24,7 @@ use chrono::NaiveDate;
 use chrono_tz::Tz;
 
 use crate::calendar::{CivilHour, HourAxis};
-use crate::problem::{Place, Problems};
+use crate::problem::{Finding, Place, Problems};
 use crate::series::Series;
 use crate::units::{Currency, Fuel};
 
@@ -47,6 +49,8 @@ pub struct Tariff {
     pub holidays: Holidays,
     /// Price lists in the order they come into force; the first also holds before its date.
     pub prices: Vec<Prices>,
+    /// What was odd in the file.
+    pub findings: Vec<Finding>,
 }
 
 /// One price list, in force from a date until the next.

@@ -11,5 +11,5 @@ mod text;
 
 pub use fuel::{CalorificBasis, CalorificValue, Fuel, FuelUnit};
 pub use measures::*;
-pub use money::{Currency, Price, parse_price};
+pub use money::{Currency, Money, Price, parse_price};
 pub use text::{Measure, Unit, UnitProblem, parse, split_number};

@@ -151,6 +151,47 @@ impl std::fmt::Display for Currency {
     }
 }
 
+/// An amount of money.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct Money {
+    /// Major units.
+    pub amount: Decimal,
+    /// Of what.
+    pub currency: Currency,
+}
+
+impl Money {
+    /// Reads `"11 400 GBP"`: a number and a code of ISO 4217.
+    ///
+    /// # Errors
+    /// A [`UnitProblem`] when there is no number, no code, or a code that is not in circulation.
+    pub fn parse(text: &str) -> Result<Self, UnitProblem> {
+        let refuse = |found: String| UnitProblem {
+            found,
+            allowed: "an amount and the three letters of its currency".to_owned(),
+            remedy: "write for example \"11 400 GBP\"".to_owned(),
+        };
+        let Some((number, code)) = split_number(text) else {
+            return Err(refuse(format!("\"{text}\" does not begin with a number")));
+        };
+        let currency = Currency::parse(code)
+            .map_err(|_| refuse(format!("\"{text}\" has the unit \"{code}\"")))?;
+        let amount = amount(number).ok_or_else(|| refuse(format!("\"{text}\" is too large")))?;
+        Ok(Self { amount, currency })
+    }
+}
+
+impl std::fmt::Display for Money {
+    fn fmt(&self, f: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
+        write!(f, "{} {}", self.currency.round(self.amount), self.currency)
+    }
+}
+
+/// A number as decimal, to 15 digits and below a thousand million: sums of amounts stay far inside the type.
+fn amount(number: f64) -> Option<Decimal> {
+    Decimal::from_f64(number).filter(|amount| amount.abs() < Decimal::from(1_000_000_000))
+}
+
 /// The currencies that a spelling belongs to.
 fn owners(spelling: &str) -> Vec<&'static str> {
     let code = CODES
@@ -186,8 +227,7 @@ pub fn parse_price(text: &str, currency: Currency, per: &str) -> Result<Price, U
         let found = format!("\"{text}\" does not begin with a number");
         return Err(refuse(found, example));
     };
-    let Some(number) = Decimal::from_f64(number).filter(|n| n.abs() < Decimal::from(1_000_000_000))
-    else {
+    let Some(number) = amount(number) else {
         return Err(refuse(format!("\"{text}\" is not an amount"), example));
     };
     if unit.is_empty() {
@@ -255,6 +295,15 @@ mod tests {
         assert!(price("24 p", "GBP").is_err());
         assert!(price("p/kWh", "GBP").is_err());
         assert!(price("24 kWh", "GBP").is_err());
+    }
+
+    #[test]
+    fn amounts_carry_their_code() {
+        let money = Money::parse("11 400.5 GBP").unwrap();
+        assert_eq!(money.to_string(), "11400.50 GBP");
+        for bad in ["11400", "11400 £", "GBP", "1e12 GBP", ""] {
+            assert!(Money::parse(bad).is_err(), "{bad}");
+        }
     }
 
     /// "Half up" is how a half is rounded in commerce: 208.8165 → 208.82 but also 2.345 → 2.35, not to even.
