@@ -3,7 +3,7 @@
 use chrono::{DateTime, Datelike, Timelike, Weekday};
 
 use super::hours::Hours;
-use super::rows::count;
+use super::words::count;
 use super::zone::{Zone, local_hours};
 use crate::problem::{Finding, Severity};
 

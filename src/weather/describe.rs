@@ -331,7 +331,7 @@ mod tests {
 
     fn ramp() -> Weather {
         let mut text = "time,temp (C)\n".to_owned();
-        for hour in 0..24 * 10 {
+        for hour in 0..24i32 * 10 {
             text += &format!(
                 "2023-01-{:02}T{:02}:00Z,{}\n",
                 hour / 24 + 1,

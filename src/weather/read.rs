@@ -6,7 +6,7 @@ use std::sync::Arc;
 use chrono::DateTime;
 
 use super::hours::{self, Hours};
-use super::rows::count;
+use super::words::count;
 use super::{Kind, ReadOptions, Weather, bytes, check, clock, layout, repair, rows, values};
 use crate::air;
 use crate::calendar::HourAxis;
@@ -105,7 +105,7 @@ fn on_hours(
     let layout = layout::layout(name, &text, options, findings)?;
     let mut rows = rows::rows(name, &text, &layout, options, findings)?;
     let values = values::values(&place, &mut rows, &layout, options, findings)?;
-    let instants = clock::instants(&place, &rows, &layout, options, findings);
+    let instants = clock::instants(&place, &mut rows, &layout, options, findings);
     Ok(hours::hours(&place, &rows, values, instants, findings)?)
 }
 

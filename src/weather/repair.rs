@@ -2,7 +2,7 @@
 
 use super::hours::Hours;
 use super::options::RepairPolicy;
-use super::rows::count;
+use super::words::count;
 use crate::problem::{Finding, Problem, Problems, Severity};
 
 const HOURS_A_DAY: usize = 24;

@@ -4,7 +4,7 @@ use std::ops::Range;
 
 use chrono::{DateTime, Datelike, FixedOffset, NaiveDate, Utc};
 
-use super::rows::count;
+use super::words::count;
 use super::{Kind, Weather, Zone};
 use crate::calendar::HourAxis;
 use crate::problem::{Finding, Place, Problem, Severity};

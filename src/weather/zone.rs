@@ -8,6 +8,7 @@ use chrono_tz::Tz;
 
 /// Seconds in a day.
 const DAY_S: i64 = 86_400;
+const HOUR_S: i64 = 3600;
 const HOURS_A_DAY: usize = 24;
 
 /// A fixed offset from UTC, or a civil clock that changes twice a year.
@@ -171,12 +172,14 @@ pub(super) fn local_hours(zone: Zone, start: DateTime<Utc>, hours: usize) -> Vec
     let offset = |i: usize| i64::from(zone.offset_s(instant(i)));
     let mut local = Vec::with_capacity(hours);
     let mut before = offset(0);
+    let mut begin = start.timestamp();
     for from in (0..hours).step_by(HOURS_A_DAY) {
         let to = (from + HOURS_A_DAY).min(hours);
         let after = offset(to);
         for i in from..to {
             let of_hour = if before == after { before } else { offset(i) };
-            local.push(instant(i).timestamp() + of_hour);
+            local.push(begin + of_hour);
+            begin += HOUR_S;
         }
         before = after;
     }
