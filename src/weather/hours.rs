@@ -243,7 +243,7 @@ fn place_rows(
     let number = hour_of(last) - base + 1;
     if number > SPARSEST * i64::try_from(order.len()).unwrap_or(i64::MAX) + 240 {
         return Err(Problem::new(
-            place.clone(),
+            times.place_of(widest(&order, &times)),
             format!(
                 "{} are spread from {} to {}",
                 count(order.len(), "reading"),
@@ -292,6 +292,14 @@ fn place_rows(
 
 fn present(values: &[f64]) -> usize {
     values.iter().filter(|value| !value.is_nan()).count()
+}
+
+/// The row after the widest hole.
+fn widest(order: &[u32], times: &Times) -> u32 {
+    let steps = order
+        .windows(2)
+        .map(|w| (times.at(w[1]) - times.at(w[0]), w[1]));
+    steps.max().map_or(0, |(_, row)| row)
 }
 
 /// Means by hour; the rows are in order of time.

@@ -39,7 +39,8 @@ impl Times<'_> {
             .unwrap_or(0)
     }
 
-    fn place_of(&self, row: u32) -> Place {
+    /// The file and line of a row.
+    pub(super) fn place_of(&self, row: u32) -> Place {
         self.place.clone().at_line(self.line(row))
     }
 
