@@ -5,7 +5,7 @@ use std::sync::Arc;
 use chrono::DateTime;
 
 use super::clock::{ASIDE, Instants};
-use super::order::{Times, minutes};
+use super::order::{Times, minutes, phase};
 use super::rows::Rows;
 use super::values::Values;
 use super::words::count;
@@ -201,12 +201,9 @@ pub(super) fn hours(
 /// Whether the rows are hours in a row already, each on the hour, as in most files.
 fn is_whole(instants: &Instants) -> bool {
     let begins = &instants.begin_s;
-    let on_the_hour = begins
-        .first()
-        .and_then(|&first| DateTime::from_timestamp(first, 0))
-        .is_some_and(|first| {
-            (first.timestamp() + i64::from(instants.zone.offset_s(first))).rem_euclid(HOUR_S) == 0
-        });
+    let on_the_hour = begins.first().is_some_and(|&first| {
+        first != ASIDE && (first + phase(instants.zone, first)).rem_euclid(HOUR_S) == 0
+    });
     on_the_hour
         && begins
             .windows(2)
