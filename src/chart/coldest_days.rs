@@ -173,6 +173,7 @@ fn frames(
             let end = data.hours.len() as f64;
             Frame {
                 area,
+                title_left: MARGIN,
                 x: Axis::named("", 0.0, end, Vec::new()),
                 y: axis,
             }

@@ -21,30 +21,38 @@
 
 mod bars;
 mod cloud;
+mod ends;
 mod font;
 mod frame;
 mod geometry;
 mod numbers;
 mod paint;
 mod palette;
+mod ramp;
 mod scene;
 
 mod annual_cost;
 mod carbon_by_system;
+mod carpet;
 mod coldest_days;
 mod cop_year;
 mod demand_and_output;
+mod duration_curve;
 mod load_duration;
+mod machine_performance;
 mod monthly;
 mod pressure_enthalpy;
 
 pub use annual_cost::{AnnualCost, SystemCost, annual_cost};
 pub use carbon_by_system::{CarbonBySystem, SystemCarbon, carbon_by_system};
+pub use carpet::{Carpet, Spell, calendar_months, carpet};
 pub use coldest_days::{ColdHour, ColdestDays, coldest_days};
 pub use cop_year::{CopSystem, CopYear, cop_year};
 pub use demand_and_output::{DemandAndOutput, demand_and_output};
+pub use duration_curve::{DurationCurve, duration_curve};
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
 pub use load_duration::{LoadDuration, load_duration};
+pub use machine_performance::{FlowCurve, MachinePerformance, TestedPoint, machine_performance};
 pub use monthly::{Monthly, MonthlySystem, monthly};
 pub use numbers::Marks;
 pub use paint::PNG_PIXELS;

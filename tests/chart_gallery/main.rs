@@ -8,5 +8,7 @@ mod annual_cost;
 mod common;
 mod hours;
 mod loads;
+mod machines;
 mod pressure_enthalpy;
 mod sums;
+mod weather;
