@@ -2,7 +2,7 @@
 
 use super::frame::{Axis, Frame};
 use super::numbers::{self, Marks};
-use super::palette::{AXIS, CORAL, Colour, INK, WHITE};
+use super::palette::{AXIS, INK, WHITE};
 use super::ramp;
 use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Type, WIDTH};
 use super::{ChartError, Picture, finite, font, font::Weight};
@@ -39,7 +39,7 @@ pub struct Spell {
 
 const PLOT: f64 = 250.0;
 /// Shades that are told apart; neighbours of one shade are drawn as one.
-const SHADES: usize = 24;
+const SHADES: usize = 20;
 const KEY: f64 = 260.0;
 
 /// Draws a carpet.
@@ -71,10 +71,7 @@ pub fn carpet(data: &Carpet, marks: &Marks) -> Result<Picture, ChartError> {
     let missing = data.hours.iter().filter(|h| h.is_none()).count();
     let mut subtitle = format!("{}, one column a day, one row an hour.", data.quantity);
     if missing > 0 {
-        subtitle += &format!(
-            " White: {} hours without a value.",
-            marks.number(missing as f64, 0)
-        );
+        subtitle += &format!(" White: {} without a value.", marks.count(missing, "hour"));
     }
     let below = scene.heading(&data.title, &subtitle);
     let key_bottom = draw_key(&mut scene, data, &scale, below, marks);
@@ -219,37 +216,41 @@ fn draw_spell(scene: &mut Scene, frame: &Frame, data: &Carpet, days: usize) {
     if last <= first {
         return;
     }
+    // Brackets above and below, so that the days themselves stay in sight.
     let area = frame.area;
-    let edge = Rect {
-        left: frame.at_x(first) - 1.5,
-        right: frame.at_x(last) + 1.5,
-        top: area.top - 5.0,
-        bottom: area.bottom + 5.0,
-    };
-    scene.outline(&edge.corners(), WHITE, 5.0);
-    let line: Colour = CORAL;
-    scene.outline(&edge.corners(), INK, 3.4);
-    scene.outline(&edge.corners(), line, 1.4);
+    let (left, right) = (frame.at_x(first), frame.at_x(last));
+    for (edge, tip) in [(area.top - 5.0, 4.0), (area.bottom + 5.0, -4.0)] {
+        let bracket = [
+            (left, edge + tip),
+            (left, edge),
+            (right, edge),
+            (right, edge + tip),
+        ];
+        scene.line(&bracket, INK, 2.4);
+    }
     let set = Type::new(SMALL, Weight::Bold, INK);
-    let room = area.right - area.left - 110.0;
-    let text = font::fit(&spell.label, set.size, set.weight, room);
+    let clear = area.left + 90.0;
+    let text = font::fit(&spell.label, set.size, set.weight, area.right - clear);
     let wide = set.width(&text);
-    let middle = (edge.left + edge.right) / 2.0;
-    let x = middle.clamp(area.left + 90.0 + wide / 2.0, area.right - wide / 2.0);
-    scene.text(&text, (x, area.top - 13.0), Anchor::Middle, set);
+    let x = if right + wide + 8.0 <= area.right {
+        (right + 8.0).max(clear)
+    } else {
+        (left - 8.0 - wide).max(clear).min(area.right - wide)
+    };
+    scene.text(&text, (x, area.top - 11.0), Anchor::Start, set);
 }
 
 fn alt(data: &Carpet, days: usize, ends: (f64, f64), missing: usize, marks: &Marks) -> String {
     let unit = &data.unit;
     let mut out = format!(
-        "Heat map of {} over {} days and 24 hours of the day, from {} to {} {unit}.",
+        "Heat map of {} over {} and 24 hours of the day, from {} to {} {unit}.",
         data.quantity.to_lowercase(),
-        marks.number(days as f64, 0),
+        marks.count(days, "day"),
         marks.number(ends.0, 1),
         marks.number(ends.1, 1)
     );
     if missing > 0 {
-        out += &format!(" {} hours have no value.", marks.number(missing as f64, 0));
+        out += &format!(" Without a value: {}.", marks.count(missing, "hour"));
     }
     if let Some(spell) = &data.spell {
         out += &format!(" Marked: {}.", spell.label.trim_end_matches('.'));
@@ -312,7 +313,7 @@ mod tests {
         };
         let picture = carpet(&data, &Marks::default()).unwrap();
         assert!(
-            picture.alt.contains("1 hours have no value"),
+            picture.alt.contains("Without a value: 1 hour."),
             "{}",
             picture.alt
         );

@@ -5,7 +5,7 @@ use super::frame::{Axis, Frame};
 use super::numbers::Marks;
 use super::palette::{Dash, INK, NAVY, WHITE};
 use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Type, WIDTH};
-use super::{ChartError, Picture, finite, font, named_short};
+use super::{ChartError, Picture, finite, font, sentence};
 
 const PICTURE: &str = "duration curve";
 
@@ -47,8 +47,8 @@ pub fn duration_curve(data: &DurationCurve, marks: &Marks) -> Result<Picture, Ch
 
     let title = "How long it is how cold";
     let subtitle = format!(
-        "{}. Outdoor temperature of every hour, coldest first.",
-        named_short(&data.place)
+        "{} Outdoor temperature of every hour, coldest first.",
+        sentence(&data.place)
     );
     let mut scene = Scene::new(f64::MAX);
     let top = scene.heading(title, &subtitle);
@@ -107,7 +107,7 @@ fn draw_level(
     let set = Type::new(SMALL, Weight::Regular, INK);
     let what = format!("{name} {}\u{a0}°C", marks.number(level, 1));
     let what = font::fit(&what, set.size, set.weight, 250.0);
-    let text = format!("{what}: {} hours colder", marks.number(hours as f64, 0));
+    let text = format!("{what}: {} colder", marks.count(hours, "hour"));
     let left = frame.area.left + 8.0;
     scene.place(
         &text,
@@ -126,16 +126,16 @@ fn draw_level(
 fn alt(data: &DurationCurve, sorted: &[f64], marks: &Marks) -> String {
     let n = sorted.len();
     let mut out = format!(
-        "Duration curve of outdoor temperature over {} hours, from {} to {} °C.",
-        marks.number(n as f64, 0),
+        "Duration curve of outdoor temperature over {}, from {} to {} °C.",
+        marks.count(n, "hour"),
         marks.number(sorted[0], 1),
         marks.number(sorted[n - 1], 1)
     );
     for (name, level) in &data.levels {
         out += &format!(
-            " {} hours are colder than the {name} of {} °C.",
-            marks.number(colder(sorted, *level) as f64, 0),
-            marks.number(*level, 1)
+            " Colder than the {name} of {} °C: {}.",
+            marks.number(*level, 1),
+            marks.count(colder(sorted, *level), "hour")
         );
     }
     out

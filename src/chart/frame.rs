@@ -257,10 +257,10 @@ impl Frame {
     }
 
     /// Writes `text` near the point of a pair of values, wherever there is room next to it; not at all otherwise.
-    pub(crate) fn note(&self, scene: &mut Scene, text: &str, x: f64, y: f64) -> bool {
+    pub(crate) fn note(&self, scene: &mut Scene, text: &str, x: f64, y: f64) {
         let (px, py) = self.at(x, y);
         let set = Type::new(super::scene::SMALL, super::font::Weight::Regular, INK);
-        scene.place(text, &around(px, py, 9.0), set)
+        scene.place_for((px, py), text, &around(px, py, 9.0), set);
     }
 }
 

@@ -6,7 +6,7 @@ use super::frame::{Axis, Frame};
 use super::numbers::Marks;
 use super::palette::{AXIS, Dash, GRID, Hatch, INK, Mark, Series, WHITE, series};
 use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
-use super::{ChartError, Picture, finite, named, named_short};
+use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "machine performance";
 
@@ -69,7 +69,7 @@ pub fn machine_performance(
 ) -> Result<Picture, ChartError> {
     check(data)?;
     let title = "Output and COP of the machine";
-    let mut subtitle = format!("{}. Lines: the model.", named_short(&data.machine));
+    let mut subtitle = format!("{} Lines: the model.", sentence(&data.machine));
     if !data.tested.is_empty() {
         subtitle += " Points: tested, from the datasheet.";
     }
@@ -248,7 +248,7 @@ fn draw_panel(
         let value = (pick.of)((tested.source_c, tested.output_kw, tested.cop));
         let at = frame.at(tested.source_c, value);
         let look = line_of(data, tested).map_or(OTHER, series);
-        scene.disc(at, 7.0, WHITE);
+        scene.disc(at, 6.2, WHITE);
         scene.mark(at, 5.0, look);
     }
     ends::draw(scene, frame, &names, RIGHT);

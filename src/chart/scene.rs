@@ -6,7 +6,7 @@
 
 use super::font::{self, Weight};
 use super::geometry::{self, Point};
-use super::palette::{AXIS, Colour, Dash, GRID, Hatch, INK, Mark, Series, WHITE};
+use super::palette::{AXIS, Colour, Dash, GRID, Hatch, INK, MUTED, Mark, Series, WHITE};
 
 /// Width of every picture in points; heights follow the content. At 180 mm on paper a point is 0.25 mm.
 pub const WIDTH: f64 = 720.0;
@@ -203,19 +203,46 @@ impl Scene {
     }
 
     /// Writes a text at that one of `places` which hides least of what is drawn, among those on the canvas and clear of
-    /// all earlier labels; the earlier place wins where they hide alike. Gives back whether there was such a place.
-    pub(crate) fn place(&mut self, text: &str, places: &[(Point, Anchor)], set: Type) -> bool {
+    /// all earlier labels; the earlier place wins where they hide alike. Gives back the label's box, if there was such a place.
+    pub(crate) fn place(
+        &mut self,
+        text: &str,
+        places: &[(Point, Anchor)],
+        set: Type,
+    ) -> Option<Rect> {
         let best = places
             .iter()
             .enumerate()
             .map(|(rank, &(at, anchor))| (rank, at, anchor, measure(text, at, anchor, set).area))
             .filter(|(.., area)| self.is_free(area))
-            .map(|(rank, at, anchor, area)| (self.ink(&area) + RANK * rank as f64, at, anchor))
+            .map(|(rank, at, anchor, area)| {
+                (self.ink(&area) + RANK * rank as f64, at, anchor, area)
+            })
             .min_by(|a, b| a.0.total_cmp(&b.0));
-        if let Some((_, at, anchor)) = best {
+        best.map(|(_, at, anchor, area)| {
             self.plate(text, at, anchor, set);
+            area
+        })
+    }
+
+    /// Like `place`, for a label that belongs to a point: a thin line leads from there to a label that stands off.
+    pub(crate) fn place_for(
+        &mut self,
+        point: Point,
+        text: &str,
+        places: &[(Point, Anchor)],
+        set: Type,
+    ) {
+        let Some(area) = self.place(text, places, set) else {
+            return;
+        };
+        let near = (
+            point.0.clamp(area.left, area.right),
+            point.1.clamp(area.top, area.bottom),
+        );
+        if geometry::length(&[point, near]) > 15.0 {
+            self.line(&[point, near], MUTED, 1.0);
         }
-        best.is_some()
     }
 
     /// Square points of data under `area`: what a label there would hide. Paper, grid and axes do not count.
@@ -513,8 +540,9 @@ mod tests {
         let taken = ((52.0, 50.0), Anchor::Start);
         let outside = ((-40.0, 50.0), Anchor::Start);
         let free = ((50.0, 80.0), Anchor::Start);
-        assert!(!scene.place("second", &[taken, outside], Type::body()));
-        assert!(scene.place("second", &[taken, outside, free], Type::body()));
+        let mut place = |places: &[_]| scene.place("second", places, Type::body()).is_some();
+        assert!(!place(&[taken, outside]));
+        assert!(place(&[taken, outside, free]));
         assert!(!scene.labels[0].area.overlaps(&scene.labels[1].area));
     }
 

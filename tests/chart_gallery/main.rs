@@ -10,5 +10,6 @@ mod hours;
 mod loads;
 mod machines;
 mod pressure_enthalpy;
+mod studies;
 mod sums;
 mod weather;
