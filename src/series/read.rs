@@ -8,7 +8,7 @@ use std::path::Path;
 use chrono::{DateTime, Duration, LocalResult, NaiveDate, NaiveDateTime, TimeZone, Utc};
 use chrono_tz::Tz;
 
-use super::Series;
+use super::{Series, say};
 use crate::problem::{Place, Problem, Problems};
 
 /// What the time beside a value marks.
@@ -144,12 +144,14 @@ fn columns(
     layout: &Layout,
     place: &Place,
 ) -> Result<(usize, usize), Problems> {
+    let line = headers.position().map_or(1, |position| position.line());
+    let line = usize::try_from(line).unwrap_or(1);
     let names: Vec<_> = headers.iter().collect();
     let find = |wanted: &str| names.iter().position(|name| *name == wanted);
     let refuse = |found: String, remedy: &str| {
         let allowed = format!("a column \"{TIME}\" and one of values");
         Problems::from(Problem::new(
-            place.clone().at_line(1),
+            place.clone().at_line(line),
             found,
             allowed,
             remedy,
@@ -275,7 +277,7 @@ fn hours(
         let gap = (*here - *before).num_seconds();
         let expected = *before + Duration::seconds(step);
         if gap == 0 {
-            let found = format!("{here} a second time");
+            let found = format!("{} a second time", say(*here));
             problems.push(refuse(
                 Some(*line),
                 found,
@@ -283,7 +285,7 @@ fn hours(
                 "remove one of the two",
             ));
         } else if gap < 0 {
-            let found = format!("{here} after {before}");
+            let found = format!("{} after {}", say(*here), say(*before));
             problems.push(refuse(
                 Some(*line),
                 found,
@@ -291,7 +293,7 @@ fn hours(
                 "sort the lines by time",
             ));
         } else if gap != step {
-            let found = format!("nothing from {expected} to {here}");
+            let found = format!("nothing from {} to {}", say(expected), say(*here));
             let remedy = "no value is filled in: add the missing lines";
             problems.push(refuse(Some(*line), found, "no gaps", remedy));
         }
@@ -307,7 +309,11 @@ fn hours(
     let start = first - Duration::seconds(back);
     let per_hour = usize::try_from(HOUR_S / step).unwrap_or(1);
     if start.timestamp().rem_euclid(HOUR_S) != 0 || rows.len() % per_hour != 0 {
-        let found = format!("{} values from {start}, {per_hour} an hour", rows.len());
+        let found = format!(
+            "{} values from {}, {per_hour} an hour",
+            rows.len(),
+            say(start)
+        );
         let remedy = "begin and end on the hour; do the times mark the beginning or the end of the interval?";
         return Err(refuse(Some(line), found, "whole hours", remedy).into());
     }
@@ -393,10 +399,10 @@ mod tests {
         for (tail, said) in [
             (
                 "2024-01-01 04:00,1\n",
-                "nothing from 2024-01-01 02:00:00 UTC to 2024-01-01 04:00:00 UTC",
+                "nothing from 2024-01-01 02:00 UTC to 2024-01-01 04:00 UTC",
             ),
             ("2024-01-01 01:00,1\n", "a second time"),
-            ("2023-12-31 00:00,1\n", "2023-12-31 00:00:00 UTC after"),
+            ("2023-12-31 00:00,1\n", "2023-12-31 00:00 UTC after"),
         ] {
             let problems = utc(&format!("{head}{tail}")).unwrap_err();
             let first = problems.iter().next().unwrap();

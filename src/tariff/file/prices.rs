@@ -11,7 +11,7 @@ use super::fields::{
 };
 use super::pricing::Pricing;
 use super::{DOCUMENT, parsed, zone};
-use crate::bounds::Bound;
+use crate::bounds;
 use crate::document::{Check, Leaf, Section};
 use crate::series::{Layout, read_csv};
 use crate::tariff::{
@@ -19,14 +19,6 @@ use crate::tariff::{
     flaws, parse_clock,
 };
 use crate::units::UnitProblem;
-
-/// Share of a tax; more than the price itself is a slip.
-const TAX: Bound = Bound {
-    label: "tax",
-    low: 0.0,
-    high: 1.0,
-    unit: "of the price (0 to 100 %)",
-};
 
 /// The fields of one price list, whether it is the first or a later one.
 pub(super) struct Given<'a> {
@@ -311,7 +303,16 @@ impl<'a> Given<'a> {
             };
         };
         let share = check.required(&fields.share, &fields.span(), "tax.share", "\"5 %\"");
-        let share = share.and_then(|_| check.within(&fields.share, &TAX));
+        if let (Some(share), Some(leaf)) = (share, &fields.share)
+            && !bounds::SHARE.holds(share.fraction())
+        {
+            check.refuse(
+                &leaf.span(),
+                format!("{} %", share.fraction() * 100.0),
+                "a tax from 0 to 100 % of the price without it",
+                "check the number",
+            );
+        }
         Tax {
             share: share.and_then(|share| Decimal::from_f64(share.fraction())),
             covers: covers(fields, check),
