@@ -78,6 +78,8 @@ bounds! {
     HYSTERESIS_K = "store hysteresis", 1.0 ..= 30.0, "K";
     /// Cold-water temperature.
     COLD_WATER_C = "cold-water temperature", 0.0 ..= 30.0, "°C";
+    /// Coefficient of performance at a rating point.
+    COP = "coefficient of performance", 1.0 ..= 12.0, "";
     /// Rated output of a machine or a backup heater.
     OUTPUT_KW = "heat output", 0.1 ..= 100.0, "kW";
     /// Output of a backup or immersion heater; 0 when there is none.

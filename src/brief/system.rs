@@ -1,5 +1,7 @@
 //! From a system's table to a contender of the case.
 
+use rust_decimal::prelude::ToPrimitive as _;
+
 use super::defaults;
 use super::energy::{Energy, Supply};
 use super::files::Folder;
@@ -96,13 +98,25 @@ pub(super) fn contender(
 #[allow(clippy::option_option, reason = "outer: could not be read; inner: not given")]
 fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> Option<Option<f64>> {
     let Some(leaf) = &table.capital else { return Some(None) };
-    let money: Money = check.value(&table.capital)?;
+    let text = check.value(&table.capital)?;
+    let money = match Money::parse(&text) {
+        Ok(money) => money,
+        Err(problem) => {
+            check.refuse(&leaf.span(), problem.found, problem.allowed, problem.remedy);
+            return None;
+        }
+    };
     let currency = energy?.currency;
-    if money.currency() != currency {
-        check.refuse(&leaf.span(), format!("{money}"), format!("an amount in {currency}, as the tariffs are"), "convert it");
+    if money.currency != currency {
+        check.refuse(
+            &leaf.span(),
+            format!("{money}"),
+            format!("an amount in {currency}, as the tariffs are"),
+            "convert it",
+        );
         return None;
     }
-    Some(Some(money.to_f64()))
+    Some(money.amount.to_f64())
 }
 
 fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<Heating> {
