@@ -8,6 +8,7 @@ mod cycle;
 mod failure;
 mod files;
 mod output;
+mod tariff;
 
 use std::process::ExitCode;
 
@@ -33,6 +34,7 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Cycle(cycle::Args),
+    Tariff(tariff::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -47,5 +49,6 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Cycle(args) => cycle::run(args),
+        Command::Tariff(args) => tariff::run(args),
     }
 }

@@ -5,7 +5,7 @@ mod read;
 use std::fs;
 use std::path::Path;
 
-pub use read::{Layout, Stamp, read_csv, read_text};
+pub use read::{Layout, Stamp, WithinHour, read_csv, read_text};
 
 use chrono::{DateTime, Datelike, TimeZone, Timelike, Utc};
 

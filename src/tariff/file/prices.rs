@@ -13,7 +13,7 @@ use super::pricing::Pricing;
 use super::{DOCUMENT, parsed, zone};
 use crate::bounds;
 use crate::document::{Check, Leaf, Section};
-use crate::series::{Layout, read_csv};
+use crate::series::{Layout, WithinHour, read_csv};
 use crate::tariff::{
     Band, Covers, Days, Demand, Flaw, Hourly, Prices, Season, Span, Step, Steps, Tax, When, Window,
     flaws, parse_clock,
@@ -466,6 +466,7 @@ fn read_hourly(
         column,
         stamp: stamp.unwrap_or_default(),
         zone: zone.unwrap_or(chrono_tz::Tz::UTC),
+        within_hour: WithinHour::Mean,
     };
     let mut series = check.take(read_csv(&folder.join(file?), &layout))?;
     series.scale(one?);
