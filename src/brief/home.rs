@@ -309,7 +309,7 @@ fn gains(
             aperture_m2: aperture.map_or(0.0, |area| area.m2()),
         }),
         _ => {
-            notes.default(&defaults::BASE_TEMPERATURE);
+            notes.used(&defaults::BASE_TEMPERATURE);
             up_to(parse::<crate::units::Temperature>(defaults::BASE_TEMPERATURE.value).ok()?.c(), home, check)
         }
     }
@@ -396,7 +396,7 @@ fn emitters(
             greatest.c()
         }
         (None, _) => {
-            notes.default(&defaults::GREATEST_FLOW_ABOVE_DESIGN);
+            notes.used(&defaults::GREATEST_FLOW_ABOVE_DESIGN);
             flow_c + parse::<crate::units::TemperatureDifference>(defaults::GREATEST_FLOW_ABOVE_DESIGN.value).ok()?.k()
         }
     };

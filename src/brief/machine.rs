@@ -9,7 +9,7 @@ use super::notes::Notes;
 use super::raw::{SystemKind, SystemTable};
 use crate::bounds;
 use crate::document::{Check, Leaf, Section};
-use crate::heatpump::{HeatPump, Sheet, SourceKind, fit, typical, typical_names};
+use crate::heatpump::{HeatPump, Sheet, SourceKind, fit};
 use crate::problem::{Finding, Problem, Problems, Severity};
 use crate::units::{Power, Temperature, parse};
 
@@ -65,7 +65,7 @@ pub(super) fn machine(
         _ => fitted.heat_pump.clone(),
     };
     let machine = scaled.with_field_factor(factor?.fraction());
-    let mut findings = fitted.findings.clone();
+    let mut findings = fitted.report.findings.clone();
     let label = label(&machine, table);
     if let Some(warm) = warm {
         findings.extend(smaller_than_design(&machine, &label, warm));
@@ -93,14 +93,11 @@ fn typical_sheet(table: &Section<SystemTable>, rated_output: Option<Power>, chec
         check.missing(&table.span(), "rated_output", "\"6 kW\", to which the typical machine is scaled");
     }
     let name = check.value(&table.typical_machine)?;
-    let sheet = typical(&name);
-    if sheet.is_none() {
-        let names: Vec<_> = typical_names().iter().map(|name| format!("\"{name}\"")).collect();
-        let span = span_of(&table.typical_machine);
-        check.refuse(&span, format!("\"{name}\""), names.join(", "), "name one of the typical machines");
-    }
+    let sheet = Sheet::typical(&name)
+        .map_err(|problems| at_the_table(&problems, &span_of(&table.typical_machine), check));
+    let sheet = check.take(sheet);
     rated_output?;
-    check.take(sheet?)
+    sheet
 }
 
 /// A machine known by one point alone: the fit is then mostly its stated priors.

@@ -10,6 +10,7 @@ mod notes;
 mod raw;
 mod read;
 mod system;
+mod weather;
 
 pub use defaults::{DEFAULTS, Default};
 pub use demo::FILES as DEMONSTRATION_FILES;

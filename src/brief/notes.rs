@@ -20,7 +20,7 @@ impl Notes {
     }
 
     /// Notes that a default was used.
-    pub fn default(&mut self, default: &Default) {
+    pub fn used(&mut self, default: &Default) {
         self.add(default.field, default.value, format!("default: {}", default.from));
     }
 
@@ -40,7 +40,7 @@ impl Notes {
         if leaf.is_some() {
             return check.within(leaf, bound);
         }
-        self.default(default);
+        self.used(default);
         parse(default.value).ok()
     }
 
@@ -54,7 +54,7 @@ impl Notes {
         if leaf.is_some() {
             return check.value(leaf);
         }
-        self.default(default);
+        self.used(default);
         T::read(&toml::Value::String(default.value.to_owned())).ok()
     }
 }

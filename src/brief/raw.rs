@@ -123,6 +123,28 @@ impl crate::document::LeafValue for StoreVolume {
 pub(super) struct Weather {
     /// Hourly file, relative to the brief.
     pub file: Option<Leaf<String>>,
+    /// Clock of stamps without an offset: "UTC", "-05:00" or "Europe/London".
+    pub time_zone: Option<Leaf<String>>,
+    /// Which end of its hour a stamp marks: "beginning" or "ending".
+    pub stamps: Option<Leaf<String>>,
+    /// Order of day and month where the year comes last: "day-first" or "month-first".
+    pub date_order: Option<Leaf<String>>,
+    /// Column of the time, or of the date when there is a clock_column; by heading or number from 1.
+    pub time_column: Option<Leaf<String>>,
+    /// Column of the time of day.
+    pub clock_column: Option<Leaf<String>>,
+    /// Column of the outdoor temperature.
+    pub temperature_column: Option<Leaf<String>>,
+    /// Unit of the outdoor temperature: "°C", "°F", "K", "tenths of °C" or "tenths of °F".
+    pub temperature_unit: Option<Leaf<String>>,
+    /// Column of the relative humidity.
+    pub humidity_column: Option<Leaf<String>>,
+    /// Column of the global radiation.
+    pub radiation_column: Option<Leaf<String>>,
+    /// Lines to pass over at the beginning.
+    pub skip_lines: Option<Leaf<i64>>,
+    /// Fill gaps of more than a day from the days around them instead of refusing the file.
+    pub fill_longer_gaps: Option<Leaf<bool>>,
 }
 
 /// Tariffs and carbon.

@@ -13,13 +13,14 @@ use super::home::WeatherFacts;
 use super::notes::Notes;
 use super::raw;
 use super::system::{Surroundings, contender};
+use super::weather::weather;
 use super::{defaults, demo};
 use crate::answer::Told;
 use crate::calendar::CivilHour;
 use crate::document::{Check, Document, Section, read_text};
 use crate::problem::Problems;
 use crate::study::Case;
-use crate::weather::{ReadOptions, Weather, read_bytes};
+use crate::weather::Weather;
 use crate::year::Site;
 
 /// A brief that can be run.
@@ -82,7 +83,7 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     }
     let label = raw.home.as_ref().and_then(|home| check.value(&home.label));
     let zone = time_zone(raw.home.as_ref(), check, &mut notes);
-    let weather = weather(raw, folder, zone, check);
+    let weather = weather(raw.weather.as_ref(), folder, check);
     let site = weather.as_ref().zip(zone).map(|(weather, zone)| Arc::new(site(weather, zone)));
     let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
     labels_differ(raw, check);
@@ -131,7 +132,7 @@ fn time_zone(
     notes: &mut Notes,
 ) -> Option<Tz> {
     let Some(leaf) = home.and_then(|home| home.time_zone.as_ref()) else {
-        notes.default(&defaults::TIME_ZONE);
+        notes.used(&defaults::TIME_ZONE);
         return defaults::TIME_ZONE.value.parse().ok();
     };
     let name = check.value(&home?.time_zone)?;
@@ -145,17 +146,6 @@ fn time_zone(
         );
     }
     zone
-}
-
-fn weather(raw: &raw::Brief, folder: &Folder, zone: Option<Tz>, check: &mut Check) -> Option<Weather> {
-    let _ = zone;
-    let Some(table) = &raw.weather else {
-        check.missing(&(0..0), "weather", "a table [weather] with file = \"….csv\"");
-        return None;
-    };
-    let path = check.required(&table.file, &table.span(), "weather.file", "\"../weather_samples/….csv\"")?;
-    let bytes = check.take(folder.bytes(&path))?;
-    check.take(read_bytes(&folder.name(&path), &bytes, &ReadOptions::default()))
 }
 
 fn site(weather: &Weather, zone: Tz) -> Site {

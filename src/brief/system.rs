@@ -72,7 +72,7 @@ pub(super) fn contender(
     }
     let band_k = parse::<TemperatureDifference>(defaults::BACKUP_BAND.value).ok()?.k();
     if matches!(heating, Heating::HeatPump(_)) {
-        notes.default(&defaults::BACKUP_BAND);
+        notes.used(&defaults::BACKUP_BAND);
     }
     let fuel_signal = gas.filter(|_| burns_gas).map(|gas| gas.signal.clone());
     let plan = steady(site.outdoor_c.len(), warm.indoor_c, band_k, energy.electricity.signal.clone(), fuel_signal);
@@ -143,7 +143,7 @@ fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<H
     })
 }
 
-fn direct_electric(table: &SystemTable, check: &mut Check) -> Option<Heating> {
+fn direct_electric(table: &Section<SystemTable>, check: &mut Check) -> Option<Heating> {
     check.required(&table.output, &table.span(), "output", "\"8 kW\"");
     let output = check.within(&table.output, &bounds::OUTPUT_KW)?;
     Some(Heating::DirectElectric { output_kw: output.kw() })

@@ -5,6 +5,7 @@
 //! done, 1 the input is wrong, 2 usage, 3 cannot write.
 
 mod cycle;
+mod estimate;
 mod failure;
 mod files;
 mod output;
@@ -33,6 +34,7 @@ struct Arguments {
 
 #[derive(Debug, Subcommand)]
 enum Command {
+    Estimate(estimate::Args),
     Cycle(cycle::Args),
     Tariff(tariff::Args),
 }
@@ -48,6 +50,7 @@ pub fn run() -> ExitCode {
 
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
+        Command::Estimate(args) => estimate::run(args),
         Command::Cycle(args) => cycle::run(args),
         Command::Tariff(args) => tariff::run(args),
     }
