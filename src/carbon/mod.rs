@@ -154,9 +154,8 @@ impl Factor {
                         civil.len()
                     ),
                     format!(
-                        "a factor for every hour; the file covers {} to {}",
-                        series.start(),
-                        series.end()
+                        "a factor for every hour; the file covers {}",
+                        series.covers()
                     ),
                     "give factors for the same year as the weather, or set every_year = true",
                 )

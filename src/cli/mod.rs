@@ -9,6 +9,7 @@ mod estimate;
 mod failure;
 mod files;
 mod output;
+mod tariff;
 
 use std::process::ExitCode;
 
@@ -35,6 +36,7 @@ struct Arguments {
 enum Command {
     Estimate(estimate::Args),
     Cycle(cycle::Args),
+    Tariff(tariff::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -50,5 +52,6 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
         Command::Cycle(args) => cycle::run(args),
+        Command::Tariff(args) => tariff::run(args),
     }
 }

@@ -8,7 +8,7 @@ use std::path::Path;
 use chrono::{DateTime, Duration, LocalResult, NaiveDate, NaiveDateTime, TimeZone, Utc};
 use chrono_tz::Tz;
 
-use super::Series;
+use super::{Series, say};
 use crate::problem::{Place, Problem, Problems};
 
 /// What the time beside a value marks.
@@ -21,6 +21,16 @@ pub enum Stamp {
     Ending,
 }
 
+/// What several values within an hour come to.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub enum WithinHour {
+    /// Their mean: prices, intensities, powers.
+    #[default]
+    Mean,
+    /// Their sum: amounts of energy.
+    Sum,
+}
+
 /// How a file is to be read.
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct Layout {
@@ -30,6 +40,8 @@ pub struct Layout {
     pub stamp: Stamp,
     /// The clock of times that do not carry an offset.
     pub zone: Tz,
+    /// What several values within an hour come to.
+    pub within_hour: WithinHour,
 }
 
 /// Header of the column of times.
@@ -41,7 +53,7 @@ const FEWEST: usize = 2;
 /// Seconds in an hour.
 const HOUR_S: i64 = 3600;
 
-/// Reads the values of a file; several values within an hour are averaged.
+/// Reads the values of a file.
 ///
 /// # Errors
 /// Every line that cannot be used: a time or number that is not one, a time twice, out of order or after a gap; or
@@ -97,7 +109,7 @@ pub fn read_text(file: &str, text: &str, layout: &Layout) -> Result<Series, Prob
     }
     // A refused line leaves a gap that is no news.
     limited(problems)?;
-    hours(&place, rows, layout.stamp)
+    hours(&place, rows, layout)
 }
 
 /// What is wrong with one field.
@@ -144,12 +156,14 @@ fn columns(
     layout: &Layout,
     place: &Place,
 ) -> Result<(usize, usize), Problems> {
+    let line = headers.position().map_or(1, |position| position.line());
+    let line = usize::try_from(line).unwrap_or(1);
     let names: Vec<_> = headers.iter().collect();
     let find = |wanted: &str| names.iter().position(|name| *name == wanted);
     let refuse = |found: String, remedy: &str| {
         let allowed = format!("a column \"{TIME}\" and one of values");
         Problems::from(Problem::new(
-            place.clone().at_line(1),
+            place.clone().at_line(line),
             found,
             allowed,
             remedy,
@@ -247,7 +261,7 @@ fn number(text: &str) -> Result<f64, Wrong> {
 fn hours(
     place: &Place,
     rows: Vec<(usize, DateTime<Utc>, f64)>,
-    stamp: Stamp,
+    layout: &Layout,
 ) -> Result<Series, Problems> {
     let refuse = |line: Option<usize>, found: String, allowed: &str, remedy: &str| {
         let mut place = place.clone().in_field(TIME);
@@ -275,7 +289,7 @@ fn hours(
         let gap = (*here - *before).num_seconds();
         let expected = *before + Duration::seconds(step);
         if gap == 0 {
-            let found = format!("{here} a second time");
+            let found = format!("{} a second time", say(*here));
             problems.push(refuse(
                 Some(*line),
                 found,
@@ -283,7 +297,7 @@ fn hours(
                 "remove one of the two",
             ));
         } else if gap < 0 {
-            let found = format!("{here} after {before}");
+            let found = format!("{} after {}", say(*here), say(*before));
             problems.push(refuse(
                 Some(*line),
                 found,
@@ -291,13 +305,13 @@ fn hours(
                 "sort the lines by time",
             ));
         } else if gap != step {
-            let found = format!("nothing from {expected} to {here}");
+            let found = format!("nothing from {} to {}", say(expected), say(*here));
             let remedy = "no value is filled in: add the missing lines";
             problems.push(refuse(Some(*line), found, "no gaps", remedy));
         }
     }
     limited(problems)?;
-    let back = match stamp {
+    let back = match layout.stamp {
         Stamp::Beginning => 0,
         Stamp::Ending => step,
     };
@@ -307,16 +321,24 @@ fn hours(
     let start = first - Duration::seconds(back);
     let per_hour = usize::try_from(HOUR_S / step).unwrap_or(1);
     if start.timestamp().rem_euclid(HOUR_S) != 0 || rows.len() % per_hour != 0 {
-        let found = format!("{} values from {start}, {per_hour} an hour", rows.len());
+        let found = format!(
+            "{} values from {}, {per_hour} an hour",
+            rows.len(),
+            say(start)
+        );
         let remedy = "begin and end on the hour; do the times mark the beginning or the end of the interval?";
         return Err(refuse(Some(line), found, "whole hours", remedy).into());
     }
-    let mean = |hour: &[(usize, DateTime<Utc>, f64)]| {
-        hour.iter().map(|row| row.2).sum::<f64>() / hour.len() as f64
+    let hour = |rows: &[(usize, DateTime<Utc>, f64)]| {
+        let sum: f64 = rows.iter().map(|row| row.2).sum();
+        match layout.within_hour {
+            WithinHour::Mean => sum / rows.len() as f64,
+            WithinHour::Sum => sum,
+        }
     };
     Ok(Series::new(
         start,
-        rows.chunks(per_hour).map(mean).collect(),
+        rows.chunks(per_hour).map(hour).collect(),
     ))
 }
 
@@ -329,6 +351,7 @@ mod tests {
             column: None,
             stamp,
             zone: zone.parse().unwrap(),
+            within_hour: WithinHour::Mean,
         }
     }
 
@@ -343,6 +366,12 @@ mod tests {
         assert_eq!(series.start().to_string(), "2024-01-01 00:00:00 UTC");
         let halves = "time,price\n2024-01-01 00:00,1\n2024-01-01 00:30,2\n2024-01-01 01:00,3\n2024-01-01 01:30,5\n";
         assert_eq!(utc(halves).unwrap().values(), [1.5, 4.0]);
+        let sum = Layout {
+            within_hour: WithinHour::Sum,
+            ..layout("UTC", Stamp::Beginning)
+        };
+        let summed = read_text("p", halves, &sum).unwrap();
+        assert_eq!(summed.values(), [3.0, 8.0]);
     }
 
     /// Stamps at the end of the hour name the hour before them; read as beginnings all prices move by an hour.
@@ -393,10 +422,10 @@ mod tests {
         for (tail, said) in [
             (
                 "2024-01-01 04:00,1\n",
-                "nothing from 2024-01-01 02:00:00 UTC to 2024-01-01 04:00:00 UTC",
+                "nothing from 2024-01-01 02:00 UTC to 2024-01-01 04:00 UTC",
             ),
             ("2024-01-01 01:00,1\n", "a second time"),
-            ("2023-12-31 00:00,1\n", "2023-12-31 00:00:00 UTC after"),
+            ("2023-12-31 00:00,1\n", "2023-12-31 00:00 UTC after"),
         ] {
             let problems = utc(&format!("{head}{tail}")).unwrap_err();
             let first = problems.iter().next().unwrap();

@@ -391,7 +391,7 @@ fn hourly_prices(tariff: &Tariff, civil: &[CivilHour]) -> Result<Option<Vec<f64>
         .prices
         .iter()
         .filter_map(|prices| prices.hourly.as_ref())
-        .map(|hourly| format!("{} to {}", hourly.per_kwh.start(), hourly.per_kwh.end()))
+        .map(|hourly| hourly.per_kwh.covers())
         .collect();
     Err(Problem::new(
         tariff.place.clone().in_field("hourly"),

@@ -7,6 +7,7 @@
 mod clock;
 mod coverage;
 mod file;
+mod findings;
 mod meter;
 mod metering;
 mod rate;
@@ -14,7 +15,7 @@ mod rate;
 pub use clock::{
     Days, Holidays, MINUTES, Season, When, Window, YearDay, clock, month_name, parse_clock,
 };
-pub use coverage::{Flaw, flaws};
+pub use coverage::{ClockDay, Flaw, clock_days, flaws};
 pub use file::TariffFields;
 pub use meter::{Bucket, Meter, Reading, Segment};
 pub use metering::{Flows, Metering};

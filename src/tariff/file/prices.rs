@@ -11,22 +11,14 @@ use super::fields::{
 };
 use super::pricing::Pricing;
 use super::{DOCUMENT, parsed, zone};
-use crate::bounds::Bound;
+use crate::bounds;
 use crate::document::{Check, Leaf, Section};
-use crate::series::{Layout, read_csv};
+use crate::series::{Layout, WithinHour, read_csv};
 use crate::tariff::{
     Band, Covers, Days, Demand, Flaw, Hourly, Prices, Season, Span, Step, Steps, Tax, When, Window,
     flaws, parse_clock,
 };
 use crate::units::UnitProblem;
-
-/// Share of a tax; more than the price itself is a slip.
-const TAX: Bound = Bound {
-    label: "tax",
-    low: 0.0,
-    high: 1.0,
-    unit: "of the price (0 to 100 %)",
-};
 
 /// The fields of one price list, whether it is the first or a later one.
 pub(super) struct Given<'a> {
@@ -311,7 +303,16 @@ impl<'a> Given<'a> {
             };
         };
         let share = check.required(&fields.share, &fields.span(), "tax.share", "\"5 %\"");
-        let share = share.and_then(|_| check.within(&fields.share, &TAX));
+        if let (Some(share), Some(leaf)) = (share, &fields.share)
+            && !bounds::SHARE.holds(share.fraction())
+        {
+            check.refuse(
+                &leaf.span(),
+                format!("{} %", share.fraction() * 100.0),
+                "a tax from 0 to 100 % of the price without it",
+                "check the number",
+            );
+        }
         Tax {
             share: share.and_then(|share| Decimal::from_f64(share.fraction())),
             covers: covers(fields, check),
@@ -465,6 +466,7 @@ fn read_hourly(
         column,
         stamp: stamp.unwrap_or_default(),
         zone: zone.unwrap_or(chrono_tz::Tz::UTC),
+        within_hour: WithinHour::Mean,
     };
     let mut series = check.take(read_csv(&folder.join(file?), &layout))?;
     series.scale(one?);
