@@ -89,7 +89,7 @@ pub fn break_even(data: &BreakEven, marks: &Marks) -> Result<Picture, ChartError
             right: WIDTH - MARGIN - RIGHT + 12.0,
             bottom: top + PLOT,
         },
-        Axis::linear(&format!("{lever}, {}", data.unit), x.0, x.1, 6, marks),
+        Axis::tight(&format!("{lever}, {}", data.unit), x.0, x.1, 6, marks),
         Axis::linear(
             &format!("{outcome}, {}", money_unit(&data.currency)),
             y.0,

@@ -4,7 +4,7 @@ use super::font::{self, Weight};
 use super::frame::{Axis, Frame};
 use super::geometry::Point;
 use super::numbers::Marks;
-use super::palette::{AXIS, AZURE, CORAL, Dash, GRID, Hatch, INK, NAVY, OCHRE, TEAL};
+use super::palette::{AXIS, AZURE, CORAL, Colour, Dash, GRID, Hatch, INK, NAVY, OCHRE, TEAL};
 use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
 use super::{ChartError, Picture, finite, named, sentence};
 
@@ -55,7 +55,10 @@ const GAP: f64 = 32.0;
 pub fn coldest_days(data: &ColdestDays, marks: &Marks) -> Result<Picture, ChartError> {
     check(data)?;
     let title = "The coldest days, hour by hour";
-    let subtitle = format!("{} On the clock of the home.", sentence(&data.system));
+    let subtitle = format!(
+        "{} On the clock of the home.",
+        sentence(&data.system, 320.0)
+    );
     let mut scene = Scene::new(f64::MAX);
     let below = scene.heading(title, &subtitle);
     let main = named(&data.main_heater);
@@ -276,8 +279,11 @@ fn note_extreme(
     }
 }
 
+/// Upper edge of a layer of heat, and its look.
+type Layer = (fn(&ColdHour) -> f64, Colour, Hatch);
+
 fn draw_heat(scene: &mut Scene, frame: &Frame, data: &ColdestDays) {
-    let layers: [(fn(&ColdHour) -> f64, _, _); 3] = [
+    let layers: [Layer; 3] = [
         (|h| h.main_kw, TEAL, Hatch::Plain),
         (|h| h.main_kw + h.backup_kw, CORAL, Hatch::Rising),
         (

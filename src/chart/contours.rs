@@ -1,12 +1,12 @@
 //! Saving over two prices: lines of equal saving, the zero line, today's point, lines of constant price ratio.
 
-use super::font::{self, Weight};
+use super::font::Weight;
 use super::frame::{Axis, Frame};
 use super::isolines::isolines;
 use super::numbers::{self, Marks};
 use super::palette::{AXIS, Dash, INK, NAVY, OCHRE, WHITE};
 use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
-use super::{ChartError, Picture, finite, named};
+use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "saving over two prices";
 
@@ -43,8 +43,8 @@ const PLOT: f64 = 430.0;
 pub fn contours(data: &Contours, marks: &Marks) -> Result<Picture, ChartError> {
     check(data)?;
     let title = "Where it pays, over both prices";
-    let outcome = font::fit(named(&data.outcome), SMALL, Weight::Regular, 420.0);
-    let subtitle = format!("{outcome}. Each line joins prices with the same result.");
+    let outcome = sentence(&data.outcome, 420.0);
+    let subtitle = format!("{outcome} Each line joins prices with the same result.");
     let mut scene = Scene::new(f64::MAX);
     let below = scene.heading(title, &subtitle);
     let mut entries = vec![
@@ -122,7 +122,7 @@ fn draw_levels(scene: &mut Scene, frame: &Frame, data: &Contours) -> Vec<(f64, V
     let all = || data.values.iter().flatten().copied();
     let low = all().fold(f64::INFINITY, f64::min);
     let high = all().fold(f64::NEG_INFINITY, f64::max);
-    let mut levels = numbers::ticks(low, high, 8).values;
+    let mut levels = numbers::ticks(low, high, 12).values;
     // Zero is a multiple of every step, but make sure of it: it is what the picture is for.
     if !levels.iter().any(|l| l.abs() < 1e-9) {
         levels.push(0.0);
@@ -184,10 +184,11 @@ fn draw_ratios(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks)
         // The end that leaves through the top or the right edge.
         let x = (ratio * frame.y.high).min(frame.x.high);
         let (px, py) = frame.at(x, x / ratio);
-        let text = format!(
-            "{}\u{a0}:\u{a0}1",
-            marks.number(*ratio, usize::from(ratio.fract() != 0.0))
-        );
+        let decimals = [0, 1]
+            .into_iter()
+            .find(|d| is_round(*ratio, *d))
+            .unwrap_or(2);
+        let text = format!("{}\u{a0}:\u{a0}1", marks.number(*ratio, decimals));
         let places = [
             ((px - 4.0, py + 18.0), Anchor::End),
             ((px - 8.0, py - 6.0), Anchor::End),
@@ -201,6 +202,12 @@ fn draw_ratios(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks)
             scene.place(&text, &places, Type::small());
         }
     }
+}
+
+/// Whether `value` is written in full with so many decimals.
+fn is_round(value: f64, decimals: usize) -> bool {
+    let scaled = value * 10_f64.powi(decimals as i32);
+    (scaled - scaled.round()).abs() < 1e-9
 }
 
 fn draw_now(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks) {

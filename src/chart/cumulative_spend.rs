@@ -38,7 +38,7 @@ const RIGHT: f64 = 190.0;
 /// Draws the spend.
 ///
 /// # Errors
-/// [`ChartError::Empty`] without years, [`ChartError::NotFinite`] for a value that is not a number.
+/// [`ChartError::Empty`] without years, [`ChartError::Uneven`] when systems differ in years, [`ChartError::NotFinite`] for a value that is not a number.
 pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture, ChartError> {
     let years = data
         .systems
@@ -50,6 +50,17 @@ pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture
         return Err(ChartError::Empty {
             picture: PICTURE,
             missing: "fewer than two years were given",
+        });
+    }
+    if data.systems.iter().any(|s| s.spent.len() != years) {
+        let lengths: Vec<String> = data
+            .systems
+            .iter()
+            .map(|s| s.spent.len().to_string())
+            .collect();
+        return Err(ChartError::Uneven {
+            picture: PICTURE,
+            what: format!("years of the systems: {}", numbers::list(&lengths)),
         });
     }
     for s in &data.systems {

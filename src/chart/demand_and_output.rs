@@ -53,7 +53,7 @@ pub fn demand_and_output(data: &DemandAndOutput, marks: &Marks) -> Result<Pictur
     let above = data.hours.iter().filter(|h| short(data, h.0, h.1)).count();
     let subtitle = format!(
         "{} Each cell counts hours of the year.",
-        sentence(&data.system)
+        sentence(&data.system, 320.0)
     );
     let mut scene = Scene::new(f64::MAX);
     let top = scene.heading(title, &subtitle);

@@ -48,7 +48,7 @@ pub fn duration_curve(data: &DurationCurve, marks: &Marks) -> Result<Picture, Ch
     let title = "How long it is how cold";
     let subtitle = format!(
         "{} Outdoor temperature of every hour, coldest first.",
-        sentence(&data.place)
+        sentence(&data.place, 320.0)
     );
     let mut scene = Scene::new(f64::MAX);
     let top = scene.heading(title, &subtitle);

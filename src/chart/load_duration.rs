@@ -46,7 +46,7 @@ pub fn load_duration(data: &LoadDuration, marks: &Marks) -> Result<Picture, Char
     let title = "Heat load in order of size";
     let subtitle = format!(
         "{} Hour by hour, the largest load first.",
-        sentence(&data.system)
+        sentence(&data.system, 320.0)
     );
     let mut scene = Scene::new(f64::MAX);
     let below = scene.heading(title, &subtitle);

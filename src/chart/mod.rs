@@ -219,9 +219,9 @@ fn named(label: &str) -> &str {
     }
 }
 
-/// A name as the first sentence of a subtitle: short, and closed with a full stop.
-fn sentence(label: &str) -> String {
-    let name = font::fit(named(label), scene::SMALL, font::Weight::Regular, 320.0);
+/// A name as the first sentence of a subtitle: at most `room` wide, and closed with a full stop.
+fn sentence(label: &str, room: f64) -> String {
+    let name = font::fit(named(label), scene::SMALL, font::Weight::Regular, room);
     if name.ends_with(['.', '…', '!', '?']) {
         name
     } else {

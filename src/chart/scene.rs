@@ -122,9 +122,6 @@ impl Type {
     pub(crate) const fn body() -> Self {
         Self::new(BODY, Weight::Regular, INK)
     }
-    pub(crate) const fn strong() -> Self {
-        Self::new(BODY, Weight::Bold, INK)
-    }
     pub(crate) const fn small() -> Self {
         Self::new(SMALL, Weight::Regular, super::palette::MUTED)
     }

@@ -69,6 +69,9 @@ pub fn check(name: &str, picture: &Picture) {
         picture.canvas().bottom.ceil() as u32 * PNG_PIXELS,
         "{name}"
     );
+    if name.ends_with("_realistic") {
+        crate::stored::compare(name, &bytes);
+    }
     std::fs::write(folder().join(format!("{name}.png")), bytes).expect("written");
     std::fs::write(folder().join(format!("{name}.svg")), svg).expect("written");
     std::fs::write(folder().join(format!("{name}.txt")), &picture.alt).expect("written");

@@ -105,7 +105,10 @@ fn cop_one_system() {
     let data = CopYear {
         systems: vec![cop(NAMES[1], 0.0, &year())],
     };
-    check("cop_one", &cop_year(&data, &english()).expect("drawn"));
+    check(
+        "cop_realistic",
+        &cop_year(&data, &english()).expect("drawn"),
+    );
 }
 
 #[test]

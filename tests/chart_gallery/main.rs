@@ -10,6 +10,7 @@ mod hours;
 mod loads;
 mod machines;
 mod pressure_enthalpy;
+mod stored;
 mod studies;
 mod sums;
 mod weather;
