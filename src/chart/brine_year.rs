@@ -3,9 +3,11 @@
 use super::ends::{self, End};
 use super::font::{self, Weight};
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{AXIS, Dash, INK, series};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "brine through the year";
@@ -208,7 +210,7 @@ fn draw_levels(scene: &mut Scene, frame: &Frame, data: &BrineYear, marks: &Marks
             ((right, y - 6.0), Anchor::End),
             ((right, y + 16.0), Anchor::End),
         ];
-        scene.place(&text, &places, set);
+        scene.place(&frame.area, &text, &places, set);
     }
 }
 

@@ -1,10 +1,12 @@
 //! A year as a carpet: one column a day, one row an hour, shaded by a quantity such as outdoor temperature.
 
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::{self, Marks};
 use super::palette::{AXIS, INK};
 use super::ramp;
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, font, font::Weight};
 
 const PICTURE: &str = "carpet of the year";

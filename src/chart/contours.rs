@@ -2,10 +2,13 @@
 
 use super::font::Weight;
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
 use super::isolines::isolines;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::{self, Marks};
 use super::palette::{AXIS, Dash, INK, NAVY, OCHRE, WHITE};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "saving over two prices";
@@ -75,12 +78,13 @@ pub fn contours(data: &Contours, marks: &Marks) -> Result<Picture, ChartError> {
     );
     frame.draw(&mut scene);
     frame.border(&mut scene);
-    draw_ratios(&mut scene, &frame, data, marks);
+    draw_ratios(&mut scene, &frame, data);
     let lines = draw_levels(&mut scene, &frame, data);
     draw_now(&mut scene, &frame, data, marks);
     for (level, line) in &lines {
         label_level(&mut scene, &frame, data, *level, line, marks);
     }
+    label_ratios(&mut scene, &frame, data, marks);
     let zero = lines.iter().any(|(level, _)| *level == 0.0);
     Ok(Picture::new(title, alt(data, zero, marks), scene))
 }
@@ -171,16 +175,22 @@ fn label_level(
         })
         .map(|(x, y)| ((x, y + 4.6), Anchor::Middle))
         .collect();
-    scene.place(&text, &places, set);
+    scene.place(&frame.area, &text, &places, set);
 }
 
-fn draw_ratios(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks) {
+fn draw_ratios(scene: &mut Scene, frame: &Frame, data: &Contours) {
     for ratio in data.ratios.iter().filter(|r| **r > 0.0) {
         let ends = [
             (frame.x.low, frame.x.low / ratio),
             (frame.x.high, frame.x.high / ratio),
         ];
         frame.line(scene, &ends, AXIS, 1.8, Dash::Dotted);
+    }
+}
+
+/// Names of the ratio lines, written when all lines are drawn.
+fn label_ratios(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks) {
+    for ratio in data.ratios.iter().filter(|r| **r > 0.0) {
         // The end that leaves through the top or the right edge.
         let x = (ratio * frame.y.high).min(frame.x.high);
         let (px, py) = frame.at(x, x / ratio);
@@ -199,7 +209,7 @@ fn draw_ratios(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks)
             top: py,
             bottom: py,
         }) {
-            scene.place(&text, &places, Type::small());
+            scene.place(&frame.area, &text, &places, Type::small());
         }
     }
 }
@@ -225,7 +235,13 @@ fn draw_now(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks) {
     scene.disc(at, 7.0, OCHRE);
     let text = format!("now {} and {}", marks.number(x, 1), marks.number(y, 1));
     let set = Type::new(SMALL, Weight::Bold, INK);
-    scene.place_for(at, &text, &super::frame::around(at.0, at.1, 12.0), set);
+    scene.place_for(
+        &frame.area,
+        at,
+        &text,
+        &super::frame::around(at.0, at.1, 12.0),
+        set,
+    );
 }
 
 fn alt(data: &Contours, zero: bool, marks: &Marks) -> String {

@@ -3,9 +3,11 @@
 use super::ends::{self, End};
 use super::font::Weight;
 use super::frame::{Axis, Frame, around};
+use super::geometry::Rect;
+use super::label::{SMALL, Type};
 use super::numbers::{self, Marks, money_unit};
 use super::palette::{INK, WHITE, series};
-use super::scene::{MARGIN, Rect, SMALL, Scene, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "spend over the years";
@@ -129,7 +131,7 @@ pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture
         scene.disc((x, y), 6.5, INK);
         scene.disc((x, y), 3.6, WHITE);
         let text = format!("year {}", marks.number(year, 1));
-        scene.place_for((x, y), &text, &around(x, y, 12.0), set);
+        scene.place_for(&frame.area, (x, y), &text, &around(x, y, 12.0), set);
     }
     Ok(Picture::new(title, alt(data, marks), scene))
 }

@@ -2,8 +2,9 @@
 
 use super::font::{self, Weight};
 use super::frame::Frame;
+use super::label::{Anchor, SMALL, Type};
 use super::palette::{Colour, INK};
-use super::scene::{Anchor, SMALL, Scene, Type};
+use super::scene::Scene;
 
 /// Height of a line of a name.
 const LINE: f64 = 16.5;

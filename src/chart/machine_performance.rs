@@ -3,9 +3,12 @@
 use super::ends::{self, End};
 use super::font::Weight;
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{AXIS, Dash, GRID, Hatch, INK, Mark, Series, WHITE, series};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "machine performance";

@@ -3,9 +3,12 @@
 use super::bars::draw_name;
 use super::font::Weight;
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{AXIS, AZURE, BROWN, Colour, Hatch, INK, NAVY};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "month by month";

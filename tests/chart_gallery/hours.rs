@@ -96,7 +96,7 @@ fn cop(label: &str, shift: f64, hours: &[Hour]) -> CopSystem {
             .filter(|h| h.demand_kw > 0.0)
             .map(|h| (h.outdoor_c, h.cop + shift))
             .collect(),
-        year: Some(("SPF H2".into(), 3.14 + shift)),
+        year: Some(("SPF H2".into(), 3.1 + shift)),
     }
 }
 
