@@ -145,7 +145,7 @@ pub enum ChartError {
         /// What is missing.
         missing: &'static str,
     },
-    /// A number is not one.
+    /// A number is not one, or too large to be drawn.
     NotFinite {
         /// The picture.
         picture: &'static str,
@@ -185,7 +185,7 @@ impl fmt::Display for ChartError {
                 value,
             } => write!(
                 f,
-                "the picture “{picture}” needs a finite number for {what}, found {value}"
+                "the picture “{picture}” needs a number below 10¹² for {what}, found {value}"
             ),
             Self::Uneven { picture, what } => {
                 write!(
@@ -201,13 +201,16 @@ impl fmt::Display for ChartError {
 
 impl std::error::Error for ChartError {}
 
-/// Refuses the first of `values` that is not a finite number.
+/// Larger numbers are no money, energy or temperature of a home, and their figures would not fit.
+const LARGEST: f64 = 1e12;
+
+/// Refuses the first of `values` that is not a number or too large to be drawn.
 fn finite<'a>(
     picture: &'static str,
     values: impl IntoIterator<Item = (&'a str, f64)>,
 ) -> Result<(), ChartError> {
     for (what, value) in values {
-        if !value.is_finite() {
+        if !value.is_finite() || value.abs() > LARGEST {
             return Err(ChartError::NotFinite {
                 picture,
                 what: what.to_string(),

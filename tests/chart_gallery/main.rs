@@ -17,6 +17,8 @@ mod machines;
 #[cfg(test)]
 mod pressure_enthalpy;
 #[cfg(test)]
+mod random;
+#[cfg(test)]
 mod stored;
 #[cfg(test)]
 mod studies;
