@@ -1,1 +1,127 @@
 //! One table of physical limits, with the labels used in messages.
+//!
+//! A bound is what a thing can physically be, wide enough never to refuse a real home and narrow enough to
+//! catch a slipped unit. Values are common practice, no source, unless a source stands beside them.
+
+/// A closed interval with the name of what it limits.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Bound {
+    /// What is limited, as messages call it.
+    pub label: &'static str,
+    /// Least value.
+    pub low: f64,
+    /// Greatest value.
+    pub high: f64,
+    /// The unit of both.
+    pub unit: &'static str,
+}
+
+impl Bound {
+    /// Whether the value lies inside; never for a value that is not a number.
+    pub fn holds(&self, value: f64) -> bool {
+        (self.low..=self.high).contains(&value)
+    }
+
+    /// The bound in words: `outdoor air from -60 to 55 °C`.
+    pub fn words(&self) -> String {
+        format!(
+            "{} from {} to {} {}",
+            self.label, self.low, self.high, self.unit
+        )
+        .trim_end()
+        .to_owned()
+    }
+}
+
+macro_rules! bounds {
+    ($($(#[$doc:meta])* $name:ident = $label:literal, $low:literal ..= $high:literal, $unit:literal;)*) => {
+        $($(#[$doc])* pub const $name: Bound = Bound { label: $label, low: $low, high: $high, unit: $unit };)*
+        /// Every bound, for documentation and tests.
+        pub const ALL: &[Bound] = &[$($name),*];
+    };
+}
+
+bounds! {
+    /// Hourly outdoor air.
+    OUTDOOR_C = "outdoor air", -60.0 ..= 55.0, "°C";
+    /// Relative humidity.
+    RELATIVE_HUMIDITY_PERCENT = "relative humidity", 0.0 ..= 100.0, "%";
+    /// Global horizontal irradiance; above the solar constant only by cloud-edge enhancement.
+    GLOBAL_W_PER_M2 = "global radiation", 0.0 ..= 1600.0, "W/m²";
+    /// Indoor set point.
+    INDOOR_C = "indoor temperature", 5.0 ..= 30.0, "°C";
+    /// Base temperature of the degree-hour sum.
+    BASE_C = "base temperature", 5.0 ..= 25.0, "°C";
+    /// Whole-home heat-loss coefficient.
+    HEAT_LOSS_W_PER_K = "heat-loss coefficient", 10.0 ..= 3000.0, "W/K";
+    /// Design heat load of one home.
+    DESIGN_LOAD_KW = "design heat load", 0.3 ..= 100.0, "kW";
+    /// Heated floor area.
+    FLOOR_AREA_M2 = "floor area", 10.0 ..= 2000.0, "m²";
+    /// Constant internal gains.
+    GAINS_KW = "internal gains", 0.0 ..= 5.0, "kW";
+    /// Effective south-facing solar aperture of a home.
+    SOLAR_APERTURE_M2 = "effective solar aperture", 0.0 ..= 100.0, "m²";
+    /// Time constant of a building.
+    TIME_CONSTANT_H = "building time constant", 0.0 ..= 1000.0, "h";
+    /// Emitter flow temperature.
+    FLOW_C = "flow temperature", 20.0 ..= 85.0, "°C";
+    /// Hot-water draw in a day.
+    HOT_WATER_L = "daily hot water", 0.0 ..= 2000.0, "L";
+    /// Hot-water energy in a day.
+    HOT_WATER_KWH = "daily hot-water energy", 0.0 ..= 100.0, "kWh";
+    /// Hot-water store volume.
+    STORE_L = "hot-water store", 10.0 ..= 2000.0, "L";
+    /// Hot-water set point and draw temperature.
+    HOT_WATER_C = "hot-water temperature", 30.0 ..= 80.0, "°C";
+    /// Fall of a store before it is heated again.
+    HYSTERESIS_K = "store hysteresis", 1.0 ..= 30.0, "K";
+    /// Cold-water temperature.
+    COLD_WATER_C = "cold-water temperature", 0.0 ..= 30.0, "°C";
+    /// Coefficient of performance at a rating point.
+    COP = "coefficient of performance", 1.0 ..= 12.0, "";
+    /// Rated output of a machine or a backup heater.
+    OUTPUT_KW = "heat output", 0.1 ..= 100.0, "kW";
+    /// Output of a backup or immersion heater; 0 when there is none.
+    HEATER_KW = "electric heater", 0.0 ..= 50.0, "kW";
+    /// Electric power of a pump, a fan or controls.
+    AUXILIARY_KW = "auxiliary power", 0.0 ..= 2.0, "kW";
+    /// Boiler efficiency on gross calorific value: a perfect condensing boiler cannot exceed 1.
+    GROSS_EFFICIENCY = "efficiency on gross calorific value", 0.3 ..= 1.0, "";
+    /// A share of something.
+    SHARE = "share", 0.0 ..= 1.0, "";
+    /// Undisturbed ground.
+    GROUND_C = "undisturbed ground", -10.0 ..= 30.0, "°C";
+    /// Depth of a buried loop.
+    TRENCH_DEPTH_M = "trench depth", 0.3 ..= 5.0, "m";
+    /// Thermal diffusivity of soil.
+    DIFFUSIVITY_M2_PER_S = "thermal diffusivity", 1.0e-7 ..= 3.0e-6, "m²/s";
+    /// How far a loop's brine falls per kilowatt drawn.
+    LOOP_K_PER_KW = "loop resistance", 0.05 ..= 10.0, "K/kW";
+    /// Carbon factor of any fuel or electricity.
+    CARBON_KG_PER_KWH = "carbon factor", 0.0 ..= 2.0, "kg CO2e/kWh";
+    /// Allowance from laboratory to home, as a multiplier of the laboratory figure.
+    FIELD_FACTOR = "field factor", 0.5 ..= 1.0, "";
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn every_bound_is_an_interval_with_a_name() {
+        for bound in ALL {
+            assert!(bound.low < bound.high, "{}", bound.label);
+            assert!(
+                !bound.holds(f64::NAN) && !bound.holds(f64::INFINITY),
+                "{}",
+                bound.label
+            );
+            assert!(
+                bound.holds(bound.low) && bound.holds(bound.high),
+                "{}",
+                bound.label
+            );
+        }
+    }
+}

@@ -1,0 +1,110 @@
+//! Writing results: a file is written whole or not at all, and never over another unasked.
+
+use std::fs;
+use std::io::Write;
+use std::path::{Path, PathBuf};
+
+use tempfile::NamedTempFile;
+
+use super::Failure;
+
+/// A file to be written.
+#[derive(Debug)]
+pub struct NewFile {
+    /// Where it goes.
+    pub path: PathBuf,
+    /// All of it.
+    pub content: Vec<u8>,
+}
+
+impl NewFile {
+    /// A file of a path and its content.
+    pub fn new(path: impl Into<PathBuf>, content: impl Into<Vec<u8>>) -> Self {
+        Self {
+            path: path.into(),
+            content: content.into(),
+        }
+    }
+}
+
+/// Writes files, each whole or not at all; with `force` over what is there.
+///
+/// Every target is looked at before the first is written, so a refusal leaves the folder as it was.
+///
+/// # Errors
+/// [`Failure::Write`] naming the file and the reason.
+pub fn write_files(files: &[NewFile], force: bool) -> Result<(), Failure> {
+    let fail = |path: &Path, reason: String| Failure::Write {
+        path: path.to_owned(),
+        reason,
+    };
+    for file in files {
+        if !force && file.path.exists() {
+            return Err(fail(
+                &file.path,
+                "it is there already; --force overwrites it".to_owned(),
+            ));
+        }
+    }
+    let mut ready = Vec::with_capacity(files.len());
+    for file in files {
+        let folder = match file.path.parent() {
+            Some(parent) if !parent.as_os_str().is_empty() => parent,
+            _ => Path::new("."),
+        };
+        fs::create_dir_all(folder).map_err(|e| fail(folder, e.to_string()))?;
+        let mut temporary =
+            NamedTempFile::new_in(folder).map_err(|e| fail(&file.path, e.to_string()))?;
+        temporary
+            .write_all(&file.content)
+            .and_then(|()| temporary.as_file().sync_all())
+            .and_then(|()| readable(&temporary))
+            .map_err(|e| fail(&file.path, e.to_string()))?;
+        ready.push((temporary, &file.path));
+    }
+    for (temporary, path) in ready {
+        let moved = if force {
+            temporary.persist(path)
+        } else {
+            temporary.persist_noclobber(path)
+        };
+        moved.map_err(|e| fail(path, e.error.to_string()))?;
+    }
+    Ok(())
+}
+
+/// Temporary files are private; a result is as readable as any other file.
+#[cfg(unix)]
+fn readable(file: &NamedTempFile) -> std::io::Result<()> {
+    use std::os::unix::fs::PermissionsExt;
+    file.as_file()
+        .set_permissions(fs::Permissions::from_mode(0o644))
+}
+
+#[cfg(not(unix))]
+fn readable(_: &NamedTempFile) -> std::io::Result<()> {
+    Ok(())
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn nothing_is_overwritten_unasked_and_a_refusal_writes_nothing() {
+        let folder = tempfile::tempdir().unwrap();
+        let old = folder.path().join("old.csv");
+        let new = folder.path().join("new.csv");
+        fs::write(&old, "kept").unwrap();
+        let files = [NewFile::new(&new, "a"), NewFile::new(&old, "b")];
+        assert!(matches!(
+            write_files(&files, false),
+            Err(Failure::Write { .. })
+        ));
+        assert_eq!(fs::read_to_string(&old).unwrap(), "kept");
+        assert!(!new.exists());
+        write_files(&files, true).unwrap();
+        assert_eq!(fs::read_to_string(&old).unwrap(), "b");
+        assert_eq!(fs::read_dir(folder.path()).unwrap().count(), 2);
+    }
+}

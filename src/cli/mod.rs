@@ -1,0 +1,57 @@
+//! Commands: parse the arguments, call the library, print.
+//!
+//! A command is one file here: an `Args` struct that clap fills (its doc comments are the help) and a
+//! `run(&Args) -> Result<(), Failure>`. Text goes to stdout, findings and progress to stderr, and the exit status is 0
+//! done, 1 the input is wrong, 2 usage, 3 cannot write.
+
+mod cycle;
+mod estimate;
+mod failure;
+mod files;
+mod output;
+mod tariff;
+
+use std::process::ExitCode;
+
+use clap::{Parser, Subcommand};
+
+pub use failure::Failure;
+pub use files::{NewFile, write_files};
+pub use output::{Format, print, print_json, warn};
+
+/// What a heat pump would cost to run in one home, hour by hour, beside the gas boiler.
+#[derive(Debug, Parser)]
+#[command(
+    name = "winterledger",
+    version,
+    arg_required_else_help = true,
+    max_term_width = 100
+)]
+struct Arguments {
+    #[command(subcommand)]
+    command: Command,
+}
+
+#[derive(Debug, Subcommand)]
+enum Command {
+    Estimate(estimate::Args),
+    Cycle(cycle::Args),
+    Tariff(tariff::Args),
+}
+
+/// Runs the command line of this process and returns its exit status.
+pub fn run() -> ExitCode {
+    let arguments = Arguments::parse();
+    match dispatch(&arguments.command) {
+        Ok(()) => ExitCode::SUCCESS,
+        Err(failure) => failure.report(),
+    }
+}
+
+fn dispatch(command: &Command) -> Result<(), Failure> {
+    match command {
+        Command::Estimate(args) => estimate::run(args),
+        Command::Cycle(args) => cycle::run(args),
+        Command::Tariff(args) => tariff::run(args),
+    }
+}

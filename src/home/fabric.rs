@@ -1,0 +1,237 @@
+//! One room of one heat capacity: the heat an hour needs, and the temperature it leaves behind.
+
+/// Specific heat capacity of a building by construction, ISO 13790:2008 table 12 (values from memory).
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Construction {
+    /// Timber frame without heavy floors.
+    VeryLight,
+    /// Timber frame or inner lining.
+    Light,
+    /// Brick and block with plasterboard.
+    Medium,
+    /// Brick, plastered.
+    Heavy,
+    /// Concrete or thick stone, exposed.
+    VeryHeavy,
+}
+
+impl Construction {
+    /// Heat capacity for a floor area, kWh/K.
+    pub fn capacity_kwh_per_k(self, floor_area_m2: f64) -> f64 {
+        let kj_per_k_m2 = match self {
+            Self::VeryLight => 80.0,
+            Self::Light => 110.0,
+            Self::Medium => 165.0,
+            Self::Heavy => 260.0,
+            Self::VeryHeavy => 370.0,
+        };
+        kj_per_k_m2 * floor_area_m2 / 3600.0
+    }
+}
+
+/// Heat loss, storage and gains of a home, as one capacity behind one coefficient.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Fabric {
+    heat_loss_kw_per_k: f64,
+    capacity_kwh_per_k: f64,
+    gains_kw: f64,
+    solar_aperture_m2: f64,
+    /// Rooms are aired when they get this much warmer than the set point, K.
+    airing_k: f64,
+    /// exp(−1 h/τ): the share of a temperature difference that is left after an hour.
+    left_after_hour: f64,
+}
+
+/// What an hour did to the room.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct RoomStep {
+    /// Temperature at the end of the hour, °C.
+    pub end_c: f64,
+    /// Heat lost through the fabric, kWh.
+    pub loss_kwh: f64,
+    /// Heat stored in the fabric, kWh; negative when it gave heat back.
+    pub stored_kwh: f64,
+    /// Gains that were aired out because the room grew too warm, kWh.
+    pub aired_kwh: f64,
+}
+
+/// Rooms are aired from this much above the set point. Common practice, no source.
+const AIRING_K: f64 = 3.0;
+
+impl Fabric {
+    /// A fabric of a heat-loss coefficient (W/K, > 0) and a heat capacity (kWh/K, ≥ 0), with constant internal gains (kW)
+    /// and a solar aperture (m²) that turns global horizontal radiation into gains.
+    ///
+    /// A capacity of 0 is a home without storage, whose demand is the steady-state sum.
+    pub fn new(
+        heat_loss_w_per_k: f64,
+        capacity_kwh_per_k: f64,
+        gains_kw: f64,
+        solar_aperture_m2: f64,
+    ) -> Self {
+        let heat_loss_kw_per_k = heat_loss_w_per_k / 1000.0;
+        Self {
+            heat_loss_kw_per_k,
+            capacity_kwh_per_k,
+            gains_kw,
+            solar_aperture_m2,
+            airing_k: AIRING_K,
+            left_after_hour: if capacity_kwh_per_k > 0.0 {
+                (-heat_loss_kw_per_k / capacity_kwh_per_k).exp()
+            } else {
+                0.0
+            },
+        }
+    }
+
+    /// Heat-loss coefficient, W/K.
+    pub fn heat_loss_w_per_k(&self) -> f64 {
+        self.heat_loss_kw_per_k * 1000.0
+    }
+
+    /// Heat capacity over heat-loss coefficient, h.
+    pub fn time_constant_h(&self) -> f64 {
+        self.capacity_kwh_per_k / self.heat_loss_kw_per_k
+    }
+
+    /// Internal and solar gains of an hour with a global horizontal radiation (W/m²), kW.
+    pub fn gains_kw(&self, global_w_per_m2: f64) -> f64 {
+        self.gains_kw + self.solar_aperture_m2 * global_w_per_m2 / 1000.0
+    }
+
+    /// Constant internal gains, kW.
+    pub fn internal_gains_kw(&self) -> f64 {
+        self.gains_kw
+    }
+
+    /// The same home with another heat-loss coefficient, W/K.
+    pub fn with_heat_loss(&self, heat_loss_w_per_k: f64) -> Self {
+        Self::new(
+            heat_loss_w_per_k,
+            self.capacity_kwh_per_k,
+            self.gains_kw,
+            self.solar_aperture_m2,
+        )
+    }
+
+    /// Design heat load: the steady loss with neither sun nor internal gains, kW.
+    ///
+    /// At night in a cold spell there is no sun, and a base temperature, which holds gains, would understate it.
+    pub fn design_load_kw(&self, indoor_c: f64, outdoor_c: f64) -> f64 {
+        self.heat_loss_kw_per_k * (indoor_c - outdoor_c)
+    }
+
+    /// The constant heat that brings the room from `room_c` to `target_c` in one hour, kWh; 0 when it gets there alone.
+    ///
+    /// One capacity: `C dT/dt = Q + G − H (T − To)`, solved exactly for constant right-hand side:
+    /// `T(1 h) = T∞ + (T0 − T∞) e^(−1h/τ)` with `T∞ = To + (Q + G)/H`.
+    pub fn heat_to_reach_kwh(
+        &self,
+        room_c: f64,
+        target_c: f64,
+        outdoor_c: f64,
+        gains_kw: f64,
+    ) -> f64 {
+        let left = self.left_after_hour;
+        let settles_c = (target_c - room_c * left) / (1.0 - left);
+        (self.heat_loss_kw_per_k * (settles_c - outdoor_c) - gains_kw).max(0.0)
+    }
+
+    /// Steps the room through one hour with a constant heat (kWh in the hour).
+    pub fn step(
+        &self,
+        room_c: f64,
+        heat_kwh: f64,
+        outdoor_c: f64,
+        gains_kw: f64,
+        set_point_c: f64,
+    ) -> RoomStep {
+        let settles_c = outdoor_c + (heat_kwh + gains_kw) / self.heat_loss_kw_per_k;
+        let free_c = settles_c + (room_c - settles_c) * self.left_after_hour;
+        // Opening windows holds the room at the airing limit, unless it is warmer outside still.
+        let end_c = free_c.min(
+            (set_point_c + self.airing_k)
+                .max(outdoor_c)
+                .max(room_c.min(free_c)),
+        );
+        let stored_kwh = self.capacity_kwh_per_k * (end_c - room_c);
+        let free_loss_kwh = heat_kwh + gains_kw - self.capacity_kwh_per_k * (free_c - room_c);
+        let aired_kwh = heat_kwh + gains_kw - free_loss_kwh - stored_kwh;
+        RoomStep {
+            end_c,
+            loss_kwh: free_loss_kwh,
+            stored_kwh,
+            aired_kwh,
+        }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+
+    fn terrace() -> Fabric {
+        Fabric::new(
+            212.0,
+            Construction::Medium.capacity_kwh_per_k(96.0),
+            0.0,
+            0.0,
+        )
+    }
+
+    /// methods §16: at −4 °C, 212 W/K: 5.09 kW from 20 °C, 4.13 kW from 15.5 °C.
+    #[test]
+    fn design_load_is_taken_from_the_set_point_not_the_base_temperature() {
+        assert!((terrace().design_load_kw(20.0, -4.0) - 5.088).abs() < 1e-9);
+        assert!((terrace().design_load_kw(15.5, -4.0) - 4.134).abs() < 1e-9);
+    }
+
+    /// The analytic exponential of a cooling body, and half-life = τ ln 2.
+    #[test]
+    fn an_unheated_room_cools_along_the_exponential() {
+        let fabric = terrace();
+        let mut room = 20.0;
+        for _ in 0..24 {
+            room = fabric.step(room, 0.0, 0.0, 0.0, 20.0).end_c;
+        }
+        let expected = 20.0 * (-24.0 / fabric.time_constant_h()).exp();
+        assert!((room - expected).abs() < 1e-9, "{room} {expected}");
+    }
+
+    #[test]
+    fn without_storage_the_demand_is_the_steady_loss() {
+        let fabric = Fabric::new(200.0, 0.0, 0.3, 0.0);
+        let heat = fabric.heat_to_reach_kwh(15.0, 20.0, -5.0, 0.3);
+        assert!((heat - (5.0 - 0.3)).abs() < 1e-12);
+        assert!((fabric.step(15.0, heat, -5.0, 0.3, 20.0).end_c - 20.0).abs() < 1e-12);
+    }
+
+    proptest! {
+        #[test]
+        fn the_heat_that_reaches_a_target_reaches_it(
+            loss in 50.0..600.0, tau in 0.0..300.0, room in 10.0..25.0, target in 12.0..24.0f64,
+            outdoor in -30.0..11.0, gains in 0.0..0.3,
+        ) {
+            let fabric = Fabric::new(loss, tau * loss / 1000.0, gains, 0.0);
+            let heat = fabric.heat_to_reach_kwh(room, target, outdoor, gains);
+            let step = fabric.step(room, heat, outdoor, gains, target);
+            if heat > 0.0 {
+                prop_assert!((step.end_c - target).abs() < 1e-6, "{} {}", step.end_c, target);
+            } else {
+                prop_assert!(step.end_c >= target - 1e-9);
+            }
+        }
+
+        #[test]
+        fn energy_closes_and_airing_only_takes_away(
+            loss in 50.0..600.0, tau in 0.0..300.0, room in 10.0..30.0, heat in 0.0..20.0,
+            outdoor in -30.0..40.0, gains in 0.0..8.0,
+        ) {
+            let fabric = Fabric::new(loss, tau * loss / 1000.0, 0.0, 0.0);
+            let step = fabric.step(room, heat, outdoor, gains, 20.0);
+            prop_assert!((heat + gains - step.loss_kwh - step.stored_kwh - step.aired_kwh).abs() < 1e-9);
+            prop_assert!(step.aired_kwh >= -1e-9, "{}", step.aired_kwh);
+        }
+    }
+}
