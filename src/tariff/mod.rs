@@ -6,16 +6,17 @@
 
 mod clock;
 mod coverage;
+mod days;
 mod file;
 mod findings;
 mod meter;
 mod metering;
 mod rate;
+mod sort;
 
-pub use clock::{
-    Days, Holidays, MINUTES, Season, When, Window, YearDay, clock, month_name, parse_clock,
-};
+pub use clock::{MINUTES, When, Window, clock, parse_clock};
 pub use coverage::{ClockDay, Flaw, clock_days, flaws};
+pub use days::{Days, Holidays, Season, YearDay, month_name};
 pub use file::TariffFields;
 pub use meter::{Bucket, Meter, Reading, Segment};
 pub use metering::{Flows, Metering};
@@ -101,8 +102,8 @@ impl Tariff {
     /// Price signal of every hour, currency units per gross kilowatt-hour with tax.
     ///
     /// Steps depend on what is used: the signal takes the step that the last kilowatt-hour of a period reaches when
-    /// `expected_kwh_per_year` is spread evenly, or the first step when nothing is expected. `Reading::signal_cost`
-    /// tells afterwards how far that was from the bill.
+    /// `expected_kwh_per_year` is spread evenly, or the first step when nothing is expected. [`Meter::signal_cost`]
+    /// tells afterwards how far that was from the bill. A demand charge is not in the signal.
     ///
     /// # Errors
     /// When an hourly price is missing for an hour.
