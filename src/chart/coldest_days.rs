@@ -6,7 +6,7 @@ use super::geometry::Point;
 use super::numbers::Marks;
 use super::palette::{AXIS, AZURE, CORAL, Dash, GRID, Hatch, INK, NAVY, OCHRE, TEAL};
 use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
-use super::{ChartError, Picture, finite, named, named_short};
+use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "coldest days";
 
@@ -55,7 +55,7 @@ const GAP: f64 = 32.0;
 pub fn coldest_days(data: &ColdestDays, marks: &Marks) -> Result<Picture, ChartError> {
     check(data)?;
     let title = "The coldest days, hour by hour";
-    let subtitle = format!("{}, on the clock of the home.", named_short(&data.system));
+    let subtitle = format!("{} On the clock of the home.", sentence(&data.system));
     let mut scene = Scene::new(f64::MAX);
     let below = scene.heading(title, &subtitle);
     let main = named(&data.main_heater);
@@ -173,6 +173,7 @@ fn frames(
             let end = data.hours.len() as f64;
             Frame {
                 area,
+                title_left: MARGIN,
                 x: Axis::named("", 0.0, end, Vec::new()),
                 y: axis,
             }
@@ -357,10 +358,10 @@ fn alt(data: &ColdestDays, indoor: &[f64], marks: &Marks) -> String {
     let most = |values: &mut dyn Iterator<Item = f64>| values.fold(0.0, f64::max);
     let sum = |value: fn(&ColdHour) -> f64| data.hours.iter().map(value).sum::<f64>();
     let mut out = format!(
-        "Four measures of {} on one clock over {} hours: outdoor temperature falls to {} °C; heat asked for rises to {} kW; \
+        "Four measures of {} on one clock over {}: outdoor temperature falls to {} °C; heat asked for rises to {} kW; \
          {} gives {} kWh and backup {} kWh; electricity peaks at {} kW",
         named(&data.system),
-        data.hours.len(),
+        marks.count(data.hours.len(), "hour"),
         marks.number(least(&mut data.hours.iter().map(|h| h.outdoor_c)), 1),
         marks.number(most(&mut data.hours.iter().map(|h| h.demand_kw)), 1),
         named(&data.main_heater),

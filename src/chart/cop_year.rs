@@ -168,7 +168,12 @@ fn alt(data: &CopYear, marks: &Marks) -> String {
                     marks.number(warm.0, 1)
                 );
             }
-            _ => out += &format!("{} hours, too few for medians", system.hours.len()),
+            _ => {
+                out += &format!(
+                    "{}, too few for medians",
+                    marks.count(system.hours.len(), "hour")
+                )
+            }
         }
         let year = year_text(system, marks);
         out += &if year.is_empty() {

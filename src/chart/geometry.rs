@@ -178,6 +178,24 @@ pub(crate) fn clip_area(polygon: &[Point], area: &Rect) -> Vec<Point> {
     shape
 }
 
+/// Area of a polygon (Gauss's formula).
+pub(crate) fn size(polygon: &[Point]) -> f64 {
+    let twice: f64 = (0..polygon.len())
+        .map(|i| {
+            let (a, b) = (polygon[i], polygon[(i + 1) % polygon.len()]);
+            a.0 * b.1 - b.0 * a.1
+        })
+        .sum();
+    twice.abs() / 2.0
+}
+
+/// Length of a line.
+pub(crate) fn length(line: &[Point]) -> f64 {
+    line.windows(2)
+        .map(|p| (p[1].0 - p[0].0).hypot(p[1].1 - p[0].1))
+        .sum()
+}
+
 /// A line thinned to what can be seen: points closer than `step` sideways to the last kept one are merged into the
 /// lowest and highest of their column, so peaks stay.
 pub(crate) fn thin(points: &[Point], step: f64) -> Vec<Point> {
@@ -212,12 +230,6 @@ fn flush(column: &mut Vec<Point>, out: &mut Vec<Point>) {
 mod tests {
     use super::*;
 
-    fn length(line: &[Point]) -> f64 {
-        line.windows(2)
-            .map(|p| (p[1].0 - p[0].0).hypot(p[1].1 - p[0].1))
-            .sum()
-    }
-
     const UNIT: Rect = Rect {
         left: 0.0,
         top: 0.0,
@@ -245,13 +257,7 @@ mod tests {
             (90.0, 60.0),
             (10.0, 140.0),
         ];
-        let area: f64 = (0..shape.len())
-            .map(|i| {
-                let (a, b) = (shape[i], shape[(i + 1) % shape.len()]);
-                (a.0 * b.1 - b.0 * a.1) / 2.0
-            })
-            .sum::<f64>()
-            .abs();
+        let area = size(&shape);
         for pattern in [Hatch::Rising, Hatch::Falling, Hatch::Level, Hatch::Upright] {
             let drawn: f64 = hatch(&shape, pattern).iter().map(|l| length(l)).sum();
             // Strips at corners are cut: a few per cent at this size.
@@ -260,6 +266,13 @@ mod tests {
                 "{pattern:?}"
             );
         }
+    }
+
+    #[test]
+    fn size_and_length_of_a_right_triangle() {
+        let triangle = [(0.0, 0.0), (30.0, 0.0), (0.0, 40.0)];
+        assert_eq!(size(&triangle), 600.0);
+        assert_eq!(length(&triangle), 80.0);
     }
 
     #[test]

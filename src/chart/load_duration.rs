@@ -5,7 +5,7 @@ use super::geometry::Point;
 use super::numbers::{self, Marks};
 use super::palette::{CORAL, Colour, Dash, Hatch, INK, OCHRE, TEAL};
 use super::scene::{MARGIN, Rect, Scene, Swatch, WIDTH};
-use super::{ChartError, Picture, finite, named, named_short};
+use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "load duration";
 
@@ -45,8 +45,8 @@ pub fn load_duration(data: &LoadDuration, marks: &Marks) -> Result<Picture, Char
     let hours = loads.len();
     let title = "Heat load in order of size";
     let subtitle = format!(
-        "{}. Hour by hour, the largest load first.",
-        named_short(&data.system)
+        "{} Hour by hour, the largest load first.",
+        sentence(&data.system)
     );
     let mut scene = Scene::new(f64::MAX);
     let below = scene.heading(title, &subtitle);
@@ -218,12 +218,12 @@ fn alt(
     let peak = loads.first().map_or(0.0, |l| l.iter().sum());
     let parts: Vec<String> = shown.iter().map(|&i| texts[i].clone()).collect();
     format!(
-        "Heat load of {} hours for {}, sorted from the largest, {} kW. Heat by source: {}. Backup runs in {} hours.",
-        marks.number(loads.len() as f64, 0),
+        "Heat load of {} for {}, sorted from the largest, {} kW. Heat by source: {}. Backup runs in {}.",
+        marks.count(loads.len(), "hour"),
         named(&data.system),
         marks.number(peak, 1),
         numbers::list(&parts),
-        marks.number(loads.iter().filter(|l| l[1] > 0.0).count() as f64, 0)
+        marks.count(loads.iter().filter(|l| l[1] > 0.0).count(), "hour")
     )
 }
 
@@ -280,7 +280,7 @@ mod tests {
             "{texts:?}"
         );
         assert!(!texts.iter().any(|t| t.starts_with("not met")));
-        assert!(picture.alt.contains("Backup runs in 1 hours"));
+        assert!(picture.alt.contains("Backup runs in 1 hour."));
     }
 
     #[test]

@@ -21,36 +21,55 @@
 
 mod bars;
 mod cloud;
+mod ends;
 mod font;
 mod frame;
 mod geometry;
+mod isolines;
 mod numbers;
 mod paint;
 mod palette;
+mod ramp;
 mod scene;
 
 mod annual_cost;
+mod break_even;
+mod brine_year;
 mod carbon_by_system;
+mod carpet;
 mod coldest_days;
+mod contours;
 mod cop_year;
+mod cumulative_spend;
 mod demand_and_output;
+mod duration_curve;
 mod load_duration;
+mod machine_performance;
 mod monthly;
 mod pressure_enthalpy;
+mod swings;
 
 pub use annual_cost::{AnnualCost, SystemCost, annual_cost};
+pub use break_even::{BreakEven, BreakEvenLine, break_even};
+pub use brine_year::{BrineLine, BrineYear, brine_year};
 pub use carbon_by_system::{CarbonBySystem, SystemCarbon, carbon_by_system};
+pub use carpet::{Carpet, Spell, calendar_months, carpet};
 pub use coldest_days::{ColdHour, ColdestDays, coldest_days};
+pub use contours::{Contours, contours};
 pub use cop_year::{CopSystem, CopYear, cop_year};
+pub use cumulative_spend::{CumulativeSpend, SystemSpend, cumulative_spend};
 pub use demand_and_output::{DemandAndOutput, demand_and_output};
+pub use duration_curve::{DurationCurve, duration_curve};
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
 pub use load_duration::{LoadDuration, load_duration};
+pub use machine_performance::{FlowCurve, MachinePerformance, TestedPoint, machine_performance};
 pub use monthly::{Monthly, MonthlySystem, monthly};
 pub use numbers::Marks;
 pub use paint::PNG_PIXELS;
 pub use palette::Colour;
 pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
 pub use scene::{Label, Rect, WIDTH};
+pub use swings::{Swing, Swings, swings};
 
 use std::fmt;
 
@@ -200,7 +219,12 @@ fn named(label: &str) -> &str {
     }
 }
 
-/// A name short enough to stand in a sentence of a subtitle.
-fn named_short(label: &str) -> String {
-    font::fit(named(label), scene::SMALL, font::Weight::Regular, 320.0)
+/// A name as the first sentence of a subtitle: short, and closed with a full stop.
+fn sentence(label: &str) -> String {
+    let name = font::fit(named(label), scene::SMALL, font::Weight::Regular, 320.0);
+    if name.ends_with(['.', '…', '!', '?']) {
+        name
+    } else {
+        name + "."
+    }
 }

@@ -167,6 +167,8 @@ fn columns(
     frame.draw_y(scene);
     let step = frame.at_x(1.0) - frame.at_x(0.0);
     let half = (step * 0.36).min(22.0);
+    // Names that do not fit all give way to their first letters.
+    let whole = data.months.iter().all(|m| MONTH.width(m) < step - 4.5);
     for (i, month) in data.months.iter().enumerate() {
         let x = frame.at_x(i as f64);
         let (mut up, mut down) = (0.0, 0.0);
@@ -180,8 +182,11 @@ fn columns(
                 scene.hatched(&bar, *colour, *hatch);
             }
         }
-        let room = Type::small();
-        let name = super::font::fit(month, MONTH.size, MONTH.weight, (step - 3.0).max(room.size));
+        let name = if whole {
+            month.clone()
+        } else {
+            month.chars().take(1).collect()
+        };
         let y = frame.area.bottom + 16.0;
         scene.place_bare(&name, (x, y), Anchor::Middle, MONTH);
     }

@@ -47,6 +47,12 @@ impl Marks {
         out
     }
 
+    /// A count with its noun: `1 hour`, `8,760 hours`.
+    pub(crate) fn count(&self, n: usize, noun: &str) -> String {
+        let plural = if n == 1 { "" } else { "s" };
+        format!("{} {noun}{plural}", self.number(n as f64, 0))
+    }
+
     /// An amount of money in whole units, the sign before the symbol: `−£1,234`, `1.234 kr`-like codes as `CHF 1,234`.
     pub fn money(&self, currency: &str, amount: f64) -> String {
         self.money_to(currency, amount, 0)

@@ -6,7 +6,7 @@
 
 use super::font::{self, Weight};
 use super::geometry::{self, Point};
-use super::palette::{AXIS, Colour, Dash, Hatch, INK, Mark, Series, WHITE};
+use super::palette::{AXIS, Colour, Dash, GRID, Hatch, INK, MUTED, Mark, Series, WHITE};
 
 /// Width of every picture in points; heights follow the content. At 180 mm on paper a point is 0.25 mm.
 pub const WIDTH: f64 = 720.0;
@@ -21,6 +21,9 @@ pub(crate) const SMALL: f64 = 13.0;
 /// Share of the text size above and below the base line that a label box covers.
 const ASCENT: f64 = 0.78;
 const DESCENT: f64 = 0.24;
+
+/// What a later place for a label costs against an earlier one, in square points of hidden data.
+const RANK: f64 = 12.0;
 
 /// Where a text stands in relation to its point.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -61,6 +64,10 @@ impl Rect {
             && self.top <= other.top
             && self.right >= other.right
             && self.bottom >= other.bottom
+    }
+
+    fn contains_point(&self, p: Point) -> bool {
+        (self.left..=self.right).contains(&p.0) && (self.top..=self.bottom).contains(&p.1)
     }
 
     pub(crate) fn grown(&self, by: f64) -> Rect {
@@ -195,16 +202,74 @@ impl Scene {
         self.text(text, at, anchor, set);
     }
 
-    /// Writes a text at the first of `places` where it stays on the canvas and clear of all earlier labels.
-    /// Gives back whether there was such a place.
-    pub(crate) fn place(&mut self, text: &str, places: &[(Point, Anchor)], set: Type) -> bool {
-        for &(at, anchor) in places {
-            if self.is_free(&measure(text, at, anchor, set).area) {
-                self.plate(text, at, anchor, set);
-                return true;
-            }
+    /// Writes a text at that one of `places` which hides least of what is drawn, among those on the canvas and clear of
+    /// all earlier labels; the earlier place wins where they hide alike. Gives back the label's box, if there was such a place.
+    pub(crate) fn place(
+        &mut self,
+        text: &str,
+        places: &[(Point, Anchor)],
+        set: Type,
+    ) -> Option<Rect> {
+        let best = places
+            .iter()
+            .enumerate()
+            .map(|(rank, &(at, anchor))| (rank, at, anchor, measure(text, at, anchor, set).area))
+            .filter(|(.., area)| self.is_free(area))
+            .map(|(rank, at, anchor, area)| {
+                (self.ink(&area) + RANK * rank as f64, at, anchor, area)
+            })
+            .min_by(|a, b| a.0.total_cmp(&b.0));
+        best.map(|(_, at, anchor, area)| {
+            self.plate(text, at, anchor, set);
+            area
+        })
+    }
+
+    /// Like `place`, for a label that belongs to a point: a thin line leads from there to a label that stands off.
+    pub(crate) fn place_for(
+        &mut self,
+        point: Point,
+        text: &str,
+        places: &[(Point, Anchor)],
+        set: Type,
+    ) {
+        let Some(area) = self.place(text, places, set) else {
+            return;
+        };
+        let near = (
+            point.0.clamp(area.left, area.right),
+            point.1.clamp(area.top, area.bottom),
+        );
+        if geometry::length(&[point, near]) > 15.0 {
+            self.line(&[point, near], MUTED, 1.0);
         }
-        false
+    }
+
+    /// Square points of data under `area`: what a label there would hide. Paper, grid and axes do not count.
+    fn ink(&self, area: &Rect) -> f64 {
+        let quiet = |c: &Colour| [WHITE, GRID, AXIS].contains(c);
+        self.items
+            .iter()
+            .map(|item| match item {
+                Item::Area { points, colour, .. } if !quiet(colour) => {
+                    geometry::size(&geometry::clip_area(points, area))
+                }
+                Item::Line {
+                    points,
+                    colour,
+                    width,
+                } if !quiet(colour) => geometry::clip(points, area)
+                    .iter()
+                    .map(|piece| geometry::length(piece) * width.max(2.0) * 2.0)
+                    .sum(),
+                Item::Disc { centre, radius, .. }
+                    if area.grown(*radius).contains_point(*centre) =>
+                {
+                    8.0 * radius * radius
+                }
+                _ => 0.0,
+            })
+            .sum()
     }
 
     /// Like `place`, without paper behind: for quiet words on a tinted ground.
@@ -475,8 +540,9 @@ mod tests {
         let taken = ((52.0, 50.0), Anchor::Start);
         let outside = ((-40.0, 50.0), Anchor::Start);
         let free = ((50.0, 80.0), Anchor::Start);
-        assert!(!scene.place("second", &[taken, outside], Type::body()));
-        assert!(scene.place("second", &[taken, outside, free], Type::body()));
+        let mut place = |places: &[_]| scene.place("second", places, Type::body()).is_some();
+        assert!(!place(&[taken, outside]));
+        assert!(place(&[taken, outside, free]));
         assert!(!scene.labels[0].area.overlaps(&scene.labels[1].area));
     }
 

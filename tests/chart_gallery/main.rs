@@ -8,5 +8,8 @@ mod annual_cost;
 mod common;
 mod hours;
 mod loads;
+mod machines;
 mod pressure_enthalpy;
+mod studies;
 mod sums;
+mod weather;
