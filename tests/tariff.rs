@@ -4,10 +4,12 @@ use std::fs;
 use std::path::{Path, PathBuf};
 
 use assert_cmd::Command;
+use rust_decimal::Decimal;
 use serde_json::Value;
+use winterledger::bill::{self, Connection};
 use winterledger::calendar::HourAxis;
 use winterledger::document::Document;
-use winterledger::tariff::{Tariff, TariffFields};
+use winterledger::tariff::{Flows, Tariff, TariffFields};
 
 fn examples() -> Vec<PathBuf> {
     let folder = Path::new(env!("CARGO_MANIFEST_DIR")).join("tariffs");
@@ -226,6 +228,42 @@ fn a_load_of_half_hours_is_summed_and_a_part_month_has_part_steps() {
     assert_eq!(answer["load"]["hours"], 24);
     let (amounts, _) = bill("stepped_electricity", &["--load", load]);
     assert_eq!(amounts[..3], [1.92, 2.35, 212.53]);
+}
+
+/// Doubling every price of a kilowatt-hour doubles the energy of the bill and of the signal, hourly prices included, also
+/// for a reading that was taken before; the standing charge stays.
+#[test]
+fn a_changed_price_level_reprices_readings_taken_before() {
+    for path in examples() {
+        let tariff = Tariff::read(&path).unwrap();
+        let civil = HourAxis::civil_year(2023, chrono_tz::Tz::UTC)
+            .unwrap()
+            .civil(chrono_tz::Tz::UTC);
+        let meter = tariff.meter(&civil).unwrap();
+        let mut reading = meter.zero();
+        for hour in 0..civil.len() {
+            reading.record(&meter, hour, Flows::net(0.5 + (hour % 7) as f64 / 5.0, 0.0));
+        }
+        let double = tariff.with_energy_times(2.0);
+        let price = |tariff: &Tariff| {
+            bill::price_reading(tariff, &meter, &reading, Connection::Kept).unwrap()
+        };
+        let (once, twice) = (price(&tariff), price(&double));
+        // Each line is rounded to a cent.
+        let off = (twice.energy() - once.energy() * Decimal::TWO).abs();
+        assert!(
+            off <= Decimal::new(once.lines.len() as i64, 2),
+            "{} {off}",
+            tariff.label
+        );
+        assert_eq!(once.standing(), twice.standing());
+        let signal = |tariff: &Tariff| meter.price_column(tariff, None);
+        for (once, twice) in signal(&tariff).iter().zip(signal(&double)) {
+            assert!((2.0 * once - twice).abs() < 1e-9, "{}", tariff.label);
+        }
+        let afresh = double.meter(&civil).unwrap();
+        assert_eq!(afresh, meter, "a meter does not depend on the price level");
+    }
 }
 
 /// Trap: stamps at the end of the hour. The same file read both ways: same energy, another cost.

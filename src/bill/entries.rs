@@ -69,8 +69,8 @@ pub(super) fn entries(
                 );
             }
         }
-        if prices.hourly.is_some() && sums.import_kwh != 0.0 {
-            let amount = Amount::Sum(sums.import_kwh, sums.hourly_cost);
+        if let (Some(hourly), true) = (&prices.hourly, sums.import_kwh != 0.0) {
+            let amount = Amount::Sum(sums.import_kwh, sums.hourly_cost * hourly.times);
             add(Charge::Energy, "hourly price, mean", "kWh", amount);
         }
         if let (Some(standing), Connection::Kept) = (prices.standing, connection) {

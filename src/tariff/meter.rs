@@ -70,7 +70,7 @@ pub struct Bucket {
 #[derive(Debug, Clone, PartialEq)]
 pub struct Meter {
     bucket_of_hour: Vec<u16>,
-    /// Currency units per gross kilowatt-hour without tax, where prices are hourly.
+    /// Currency units per gross kilowatt-hour without tax, where prices are hourly, before [`Hourly::times`](super::Hourly).
     hourly: Option<Vec<f64>>,
     segments: Vec<Segment>,
     buckets: Vec<Bucket>,
@@ -85,7 +85,8 @@ pub struct Reading {
     pub export_kwh: Vec<f64>,
     /// Highest hourly mean power, by bucket, kilowatts.
     pub peak_kw: Vec<f64>,
-    /// Bought at hourly prices without tax, by bucket, currency units; 0 where no price is hourly.
+    /// Bought at hourly prices without tax and before [`Hourly::times`](super::Hourly), by bucket, currency units; 0 where no price is
+    /// hourly.
     pub hourly_cost: Vec<f64>,
 }
 
@@ -157,12 +158,12 @@ impl Meter {
             .iter()
             .enumerate()
             .map(|(hour, &bucket)| {
-                let (signal, tax) = signals
+                let (signal, times) = signals
                     .get(usize::from(bucket))
                     .copied()
                     .unwrap_or_default();
                 let hourly = self.hourly.as_ref().and_then(|prices| prices.get(hour));
-                signal + hourly.unwrap_or(&0.0) * tax
+                signal + hourly.unwrap_or(&0.0) * times
             })
             .collect()
     }
@@ -178,11 +179,11 @@ impl Meter {
             .iter()
             .zip(&reading.import_kwh)
             .zip(&reading.hourly_cost)
-            .map(|(((signal, tax), kwh), hourly)| signal * kwh + hourly * tax)
+            .map(|(((signal, times), kwh), hourly)| signal * kwh + hourly * times)
             .sum()
     }
 
-    /// For every bucket its price signal without hourly prices, and what those are multiplied by for tax.
+    /// For every bucket its price signal without hourly prices, and what those are multiplied by, tax included.
     fn signals(&self, tariff: &Tariff, expected_kwh_per_year: Option<f64>) -> Vec<(f64, f64)> {
         let signal = |bucket: &Bucket| {
             let segment = self.segments.get(bucket.segment)?;
@@ -193,7 +194,8 @@ impl Meter {
                 steps.reached(kwh)
             });
             let step = step.map_or(0.0, |step| step.rate.per_gross_kwh());
-            Some(((by_clock(prices, bucket) + step) * tax, tax))
+            let times = prices.hourly.as_ref().map_or(1.0, |hourly| hourly.times);
+            Some(((by_clock(prices, bucket) + step) * tax, times * tax))
         };
         let signals = self.buckets.iter().map(signal);
         signals.map(Option::unwrap_or_default).collect()

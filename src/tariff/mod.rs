@@ -79,8 +79,10 @@ pub struct Prices {
 /// A price for every hour.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Hourly {
-    /// Currency units per gross kilowatt-hour.
+    /// Currency units per gross kilowatt-hour, as the file gives them.
     pub per_kwh: Series,
+    /// What they are multiplied by; a meter keeps them as given, so that it outlasts a change of price level.
+    pub times: f64,
     /// Use the prices of the same day and hour (UTC) for any year.
     pub every_year: bool,
 }
@@ -124,6 +126,8 @@ impl Tariff {
     }
 
     /// The same tariff with every price of a kilowatt-hour multiplied; standing and demand charges stay.
+    ///
+    /// Meters and readings made under the one hold for the other: buckets do not depend on rates.
     pub fn with_energy_times(&self, factor: f64) -> Self {
         let mut tariff = self.clone();
         for prices in &mut tariff.prices {
@@ -133,7 +137,7 @@ impl Tariff {
                 rate.scale(factor);
             }
             if let Some(hourly) = &mut prices.hourly {
-                hourly.per_kwh.scale(factor);
+                hourly.times *= factor;
             }
         }
         tariff

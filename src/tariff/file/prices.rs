@@ -230,6 +230,7 @@ fn read_hourly(
     series.scale(one?);
     Some(Hourly {
         per_kwh: series,
+        times: 1.0,
         every_year: every_year.unwrap_or(false),
     })
 }
