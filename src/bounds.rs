@@ -59,11 +59,11 @@ bounds! {
     /// Heated floor area.
     FLOOR_AREA_M2 = "floor area", 10.0 ..= 2000.0, "m²";
     /// Constant internal gains.
-    GAINS_W = "internal gains", 0.0 ..= 5000.0, "W";
+    GAINS_KW = "internal gains", 0.0 ..= 5.0, "kW";
     /// Effective south-facing solar aperture of a home.
     SOLAR_APERTURE_M2 = "effective solar aperture", 0.0 ..= 100.0, "m²";
     /// Time constant of a building.
-    TIME_CONSTANT_H = "building time constant", 2.0 ..= 1000.0, "h";
+    TIME_CONSTANT_H = "building time constant", 0.0 ..= 1000.0, "h";
     /// Emitter flow temperature.
     FLOW_C = "flow temperature", 20.0 ..= 85.0, "°C";
     /// Hot-water draw in a day.
@@ -74,12 +74,18 @@ bounds! {
     STORE_L = "hot-water store", 10.0 ..= 2000.0, "L";
     /// Hot-water set point and draw temperature.
     HOT_WATER_C = "hot-water temperature", 30.0 ..= 80.0, "°C";
+    /// Fall of a store before it is heated again.
+    HYSTERESIS_K = "store hysteresis", 1.0 ..= 30.0, "K";
     /// Cold-water temperature.
     COLD_WATER_C = "cold-water temperature", 0.0 ..= 30.0, "°C";
+    /// Coefficient of performance at a rating point.
+    COP = "coefficient of performance", 1.0 ..= 12.0, "";
     /// Rated output of a machine or a backup heater.
     OUTPUT_KW = "heat output", 0.1 ..= 100.0, "kW";
+    /// Output of a backup or immersion heater; 0 when there is none.
+    HEATER_KW = "electric heater", 0.0 ..= 50.0, "kW";
     /// Electric power of a pump, a fan or controls.
-    AUXILIARY_W = "auxiliary power", 0.0 ..= 2000.0, "W";
+    AUXILIARY_KW = "auxiliary power", 0.0 ..= 2.0, "kW";
     /// Boiler efficiency on gross calorific value: a perfect condensing boiler cannot exceed 1.
     GROSS_EFFICIENCY = "efficiency on gross calorific value", 0.3 ..= 1.0, "";
     /// A share of something.

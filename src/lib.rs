@@ -2,15 +2,16 @@
 //!
 //! Rooms are listed in rank order. A room imports only rooms of a lower rank; `tests/ranks.rs` holds it.
 
-// rank 0: words and places
+// rank 0: words, places and plain physics
+pub mod air;
 pub mod bounds;
 pub mod calendar;
 pub mod problem;
 pub mod units;
 // rank 1: outside data
-pub mod air;
 pub mod document;
 pub mod refrigerant;
+pub mod series;
 pub mod weather;
 // rank 2: the parts of a system
 pub mod carbon;

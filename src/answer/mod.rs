@@ -1,1 +1,11 @@
-//! The JSON contract as plain structs.
+//! The JSON contract as plain structs, and the making of the estimate from what the runs came to.
+
+mod compose;
+pub mod cycle;
+mod estimate;
+pub mod tariff;
+
+pub use compose::{Told, compose};
+pub use estimate::{
+    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+};

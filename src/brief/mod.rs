@@ -1,1 +1,17 @@
 //! The brief: one TOML file that describes a home, its weather, today and the choices.
+
+mod defaults;
+mod demo;
+mod energy;
+mod files;
+mod home;
+mod machine;
+mod notes;
+mod raw;
+mod read;
+mod system;
+mod weather;
+
+pub use defaults::{DEFAULTS, Default};
+pub use demo::FILES as DEMONSTRATION_FILES;
+pub use read::Brief;

@@ -1,1 +1,230 @@
 //! Pictures in one visual language.
+//!
+//! Every picture is a plain struct of its own data and a function that turns it into a [`Picture`]; nothing here reads
+//! a file or knows another room. A `Picture` gives SVG, PNG, alt text and the boxes of its labels, all from the same
+//! drawing.
+//!
+//! The layers, from the bottom: `font` (embedded typeface, widths), `palette` (colours and second cues), `geometry`
+//! (dashes, hatches, clipping), `scene` (shapes and labels with their boxes), `paint` (plotters: SVG and PNG),
+//! `numbers` (marks of the place, ticks), `frame` (plot area with axes), then one file a picture.
+//!
+//! # To add a picture
+//! 1. Write `src/chart/NAME.rs`: a struct that holds what is drawn, in the units of the axes, and
+//!    `pub fn NAME(data: &Data, marks: &Marks) -> Result<Picture, ChartError>`.
+//! 2. First refuse what cannot be drawn: [`ChartError::Empty`] when there is nothing, `finite` for every number.
+//! 3. `Scene::heading`, then `Frame::inside(…)` and `draw`, then data, then labels. Write fixed labels with `text`;
+//!    write labels on data with `place` or `Frame::note`, which look for free room. Take looks from `palette::series`
+//!    or one of the named colours with a hatch or dash, never a colour alone. Units stand in every axis title.
+//! 4. Write the alt text from the data: what kind of picture, of what, and the two or three figures it is drawn for.
+//! 5. Add a realistic and the hostile cases to `tests/chart_gallery.rs`: it checks that labels are apart and on the
+//!    canvas and that the SVG is well-formed, and writes the PNG for you to look at.
+
+mod bars;
+mod cloud;
+mod ends;
+mod font;
+mod frame;
+mod geometry;
+mod isolines;
+mod numbers;
+mod paint;
+mod palette;
+mod ramp;
+mod scene;
+
+mod annual_cost;
+mod break_even;
+mod brine_year;
+mod carbon_by_system;
+mod carpet;
+mod coldest_days;
+mod contours;
+mod cop_year;
+mod cumulative_spend;
+mod demand_and_output;
+mod duration_curve;
+mod load_duration;
+mod machine_performance;
+mod monthly;
+mod pressure_enthalpy;
+mod swings;
+
+pub use annual_cost::{AnnualCost, SystemCost, annual_cost};
+pub use break_even::{BreakEven, BreakEvenLine, break_even};
+pub use brine_year::{BrineLine, BrineYear, brine_year};
+pub use carbon_by_system::{CarbonBySystem, SystemCarbon, carbon_by_system};
+pub use carpet::{Carpet, Spell, calendar_months, carpet};
+pub use coldest_days::{ColdHour, ColdestDays, coldest_days};
+pub use contours::{Contours, contours};
+pub use cop_year::{CopSystem, CopYear, cop_year};
+pub use cumulative_spend::{CumulativeSpend, SystemSpend, cumulative_spend};
+pub use demand_and_output::{DemandAndOutput, demand_and_output};
+pub use duration_curve::{DurationCurve, duration_curve};
+pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
+pub use load_duration::{LoadDuration, load_duration};
+pub use machine_performance::{FlowCurve, MachinePerformance, TestedPoint, machine_performance};
+pub use monthly::{Monthly, MonthlySystem, monthly};
+pub use numbers::Marks;
+pub use paint::PNG_PIXELS;
+pub use palette::Colour;
+pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
+pub use scene::{Label, Rect, WIDTH};
+pub use swings::{Swing, Swings, swings};
+
+use std::fmt;
+
+/// A finished picture.
+#[derive(Debug, Clone)]
+pub struct Picture {
+    /// What the picture shows, one line.
+    pub title: String,
+    /// The same content in plain sentences, for a reader who does not see it.
+    pub alt: String,
+    scene: scene::Scene,
+}
+
+impl Picture {
+    fn new(title: &str, alt: String, scene: scene::Scene) -> Self {
+        Self {
+            title: font::clean(title),
+            alt: font::clean(&alt),
+            scene,
+        }
+    }
+
+    /// The picture as an SVG document that carries its fonts.
+    ///
+    /// # Errors
+    /// When the drawing library fails.
+    pub fn svg(&self) -> Result<String, ChartError> {
+        paint::svg(self, true)
+    }
+
+    /// The picture as an SVG element for a page that carries [`font_css`] once.
+    ///
+    /// # Errors
+    /// When the drawing library fails.
+    pub fn svg_without_fonts(&self) -> Result<String, ChartError> {
+        paint::svg(self, false)
+    }
+
+    /// The picture as PNG bytes at print resolution, [`PNG_PIXELS`] pixels to a point.
+    ///
+    /// # Errors
+    /// When the drawing library fails.
+    pub fn png(&self) -> Result<Vec<u8>, ChartError> {
+        paint::png(self)
+    }
+
+    /// Every text of the picture with the room it takes.
+    pub fn labels(&self) -> &[Label] {
+        &self.scene.labels
+    }
+
+    /// The whole picture, in points.
+    pub fn canvas(&self) -> Rect {
+        self.scene.canvas()
+    }
+}
+
+/// Why a picture could not be drawn.
+#[derive(Debug, Clone, PartialEq)]
+pub enum ChartError {
+    /// There is nothing to draw.
+    Empty {
+        /// The picture.
+        picture: &'static str,
+        /// What is missing.
+        missing: &'static str,
+    },
+    /// A number is not one.
+    NotFinite {
+        /// The picture.
+        picture: &'static str,
+        /// Which number.
+        what: String,
+        /// What it was.
+        value: f64,
+    },
+    /// Lists that belong together differ in length.
+    Uneven {
+        /// The picture.
+        picture: &'static str,
+        /// The lists and their lengths.
+        what: String,
+    },
+    /// The embedded font could not be read.
+    Font,
+    /// The drawing library failed.
+    Drawing(String),
+}
+
+impl ChartError {
+    fn drawing(error: impl fmt::Display) -> Self {
+        Self::Drawing(error.to_string())
+    }
+}
+
+impl fmt::Display for ChartError {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Self::Empty { picture, missing } => {
+                write!(f, "the picture “{picture}” has nothing to draw: {missing}")
+            }
+            Self::NotFinite {
+                picture,
+                what,
+                value,
+            } => write!(
+                f,
+                "the picture “{picture}” needs a finite number for {what}, found {value}"
+            ),
+            Self::Uneven { picture, what } => {
+                write!(
+                    f,
+                    "the picture “{picture}” was given lists of different length: {what}"
+                )
+            }
+            Self::Font => write!(f, "the embedded font cannot be read"),
+            Self::Drawing(why) => write!(f, "the picture cannot be drawn: {why}"),
+        }
+    }
+}
+
+impl std::error::Error for ChartError {}
+
+/// Refuses the first of `values` that is not a finite number.
+fn finite<'a>(
+    picture: &'static str,
+    values: impl IntoIterator<Item = (&'a str, f64)>,
+) -> Result<(), ChartError> {
+    for (what, value) in values {
+        if !value.is_finite() {
+            return Err(ChartError::NotFinite {
+                picture,
+                what: what.to_string(),
+                value,
+            });
+        }
+    }
+    Ok(())
+}
+
+/// A name as it is written in a picture, when there may be none.
+fn named(label: &str) -> &str {
+    if font::clean(label).is_empty() {
+        "(no name)"
+    } else {
+        label
+    }
+}
+
+/// A name as the first sentence of a subtitle: short, and closed with a full stop.
+fn sentence(label: &str) -> String {
+    let name = font::fit(named(label), scene::SMALL, font::Weight::Regular, 320.0);
+    if name.ends_with(['.', '…', '!', '?']) {
+        name
+    } else {
+        name + "."
+    }
+}

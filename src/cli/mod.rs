@@ -4,9 +4,12 @@
 //! `run(&Args) -> Result<(), Failure>`. Text goes to stdout, findings and progress to stderr, and the exit status is 0
 //! done, 1 the input is wrong, 2 usage, 3 cannot write.
 
+mod cycle;
+mod estimate;
 mod failure;
 mod files;
 mod output;
+mod tariff;
 
 use std::process::ExitCode;
 
@@ -31,7 +34,9 @@ struct Arguments {
 
 #[derive(Debug, Subcommand)]
 enum Command {
-    // Cycle(cycle::Args),
+    Estimate(estimate::Args),
+    Cycle(cycle::Args),
+    Tariff(tariff::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -44,7 +49,9 @@ pub fn run() -> ExitCode {
 }
 
 fn dispatch(command: &Command) -> Result<(), Failure> {
-    match *command {
-        // Command::Cycle(args) => cycle::run(args),
+    match command {
+        Command::Estimate(args) => estimate::run(args),
+        Command::Cycle(args) => cycle::run(args),
+        Command::Tariff(args) => tariff::run(args),
     }
 }

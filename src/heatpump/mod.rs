@@ -7,6 +7,7 @@
 
 mod compressor;
 mod correction;
+pub mod cycle;
 mod deliver;
 mod exact;
 mod exchanger;

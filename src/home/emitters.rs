@@ -27,9 +27,11 @@ impl EmitterKind {
 pub struct Emitters {
     kind: EmitterKind,
     design_load_kw: f64,
+    design_flow_c: f64,
     design_spread_k: f64,
     design_excess_k: f64,
     greatest_flow_c: f64,
+    greatest_output_kw: f64,
 }
 
 /// Water temperatures at a load.
@@ -64,13 +66,17 @@ impl Emitters {
         room_c: f64,
         greatest_flow_c: f64,
     ) -> Self {
-        Self {
+        let mut emitters = Self {
             kind,
             design_load_kw,
+            design_flow_c: flow_c,
             design_spread_k: flow_c - return_c,
             design_excess_k: (flow_c + return_c) / 2.0 - room_c,
             greatest_flow_c: greatest_flow_c.max(flow_c),
-        }
+            greatest_output_kw: design_load_kw,
+        };
+        emitters.greatest_output_kw = emitters.output_kw(emitters.greatest_flow_c, room_c);
+        emitters
     }
 
     /// Kind of emitter.
@@ -81,6 +87,21 @@ impl Emitters {
     /// Heat they give at their design point, kW.
     pub fn design_load_kw(&self) -> f64 {
         self.design_load_kw
+    }
+
+    /// Flow temperature at the design load, °C.
+    pub fn design_flow_c(&self) -> f64 {
+        self.design_flow_c
+    }
+
+    /// Other emitters of the same kind for the same load, with another design flow temperature (°C) and the same spread as
+    /// far as the room (°C) allows; the greatest flow keeps its distance.
+    pub fn with_design_flow(&self, flow_c: f64, room_c: f64) -> Self {
+        /// Return water stays at least this much above the room, K.
+        const LEAST_EXCESS_K: f64 = 1.0;
+        let return_c = (flow_c - self.design_spread_k).max(room_c + LEAST_EXCESS_K).min(flow_c);
+        let greatest_flow_c = flow_c + (self.greatest_flow_c - self.design_flow_c);
+        Self::new(self.kind, self.design_load_kw, flow_c, return_c, room_c, greatest_flow_c)
     }
 
     /// Flow temperature that is never exceeded, °C.
@@ -123,9 +144,14 @@ impl Emitters {
         self.design_load_kw * y.powf(n)
     }
 
-    /// Greatest heat at the greatest permitted flow temperature, kW.
-    pub fn greatest_output_kw(&self, room_c: f64) -> f64 {
-        self.output_kw(self.greatest_flow_c, room_c)
+    /// Greatest heat at the greatest permitted flow temperature into a room at its design temperature, kW.
+    pub fn greatest_output_kw(&self) -> f64 {
+        self.greatest_output_kw
+    }
+
+    /// Flow minus return at the design load, K.
+    pub fn design_spread_k(&self) -> f64 {
+        self.design_spread_k
     }
 }
 

@@ -1,13 +1,13 @@
-//! The exact properties of one refrigerant.
+//! The exact properties of one refrigerant: its ranges, reference state and saturation.
 //!
-//! Every state is found on its isobar: the saturation at a pressure brackets both phases beside it, so
-//! that neither density nor temperature can be sought in the wrong phase.
+//! Every other state is found on its isobar, see `isobar.rs`.
 
+use super::dome::Dome;
 use super::helmholtz::{Helmholtz, Phase};
 use super::solve::increasing_root;
-use super::{PropertyError, Refrigerant};
+use super::{PropertyError, Refrigerant, Saturation, StatePoint};
 
-const ZERO_CELSIUS_K: f64 = 273.15;
+pub(super) const ZERO_CELSIUS_K: f64 = 273.15;
 
 /// Reference state of the International Institute of Refrigeration: saturated liquid at 0 °C has
 /// 200 kJ/kg and 1 kJ/kgK.
@@ -17,118 +17,30 @@ const REFERENCE_ENTROPY_KJ_PER_KG_K: f64 = 1.0;
 
 /// Lowest temperature offered, °C. All six equations reach lower; the pseudo-pure one of R410A ends at
 /// −73.15 °C, and no heat pump of a home works near here.
-const LOWEST_TEMPERATURE_C: f64 = -70.0;
+pub(super) const LOWEST_TEMPERATURE_C: f64 = -70.0;
 
-/// Highest temperature of superheated vapour offered, °C. It lies above the last measured temperature
-/// of some publications (R1234yf 137 °C, R32 162 °C, R134a 182 °C): the cycle's least efficient corners
-/// lead there, and vapour at these densities is governed by its ideal-gas heat capacity, which all six
-/// publications extrapolate smoothly.
-const HIGHEST_TEMPERATURE_C: f64 = 250.0;
+/// Highest temperature of superheated vapour offered, °C. Some publications end lower (R1234yf 137 °C, R32
+/// 162 °C, R134a 182 °C); beyond, the formula extrapolates, as thin vapour is governed by its ideal-gas heat
+/// capacity. Only hopeless cycles lead there, and the cycle warns of a hot discharge long before.
+pub(super) const HIGHEST_TEMPERATURE_C: f64 = 250.0;
 
 /// Saturation is offered up to this far below the critical temperature, K; closer, the two densities
 /// merge and the equilibrium is poorly conditioned.
 const CRITICAL_MARGIN_K: f64 = 0.5;
 
-/// Relative step at which the density on an isotherm counts as found.
-const DENSITY_TOLERANCE: f64 = 1e-11;
+/// The dome of a diagram reaches up to this far below the critical temperature, K.
+const DOME_MARGIN_K: f64 = 0.1;
+/// Saturation is followed this much beyond both ends of what is offered, K, so that rounding at an end does
+/// not leave the line.
+const BEYOND_THE_ENDS_K: f64 = 1e-3;
+/// More points than any picture needs.
+const MOST_DOME_POINTS: f64 = 1000.0;
+
 /// Relative step (of the absolute temperature) at which the temperature on an isobar counts as found.
-const TEMPERATURE_TOLERANCE: f64 = 1e-9;
-/// Within this distance of the saturation temperature, K, a state is taken as saturated.
-const SATURATION_WIDTH_K: f64 = 1e-7;
-/// Least fraction of the saturated vapour's density × (saturation temperature / temperature) that
-/// superheated vapour on the same isobar can have: the ratio of compressibilities, above 0.27 even at
-/// the critical point.
-const LEAST_VAPOUR_FRACTION: f64 = 0.2;
+pub(super) const TEMPERATURE_TOLERANCE: f64 = 1e-9;
 /// Greatest liquid density, relative to saturated liquid at the lowest temperature: the pressures
 /// offered compress it by less than two percent.
 const GREATEST_LIQUID_FRACTION: f64 = 1.05;
-
-/// One state of a refrigerant.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct StatePoint {
-    /// Temperature, °C.
-    pub temperature_c: f64,
-    /// Pressure, kPa absolute.
-    pub pressure_kpa: f64,
-    /// Specific enthalpy, kJ/kg (200 kJ/kg for saturated liquid at 0 °C).
-    pub enthalpy_kj_per_kg: f64,
-    /// Specific entropy, kJ/kgK (1 kJ/kgK for saturated liquid at 0 °C).
-    pub entropy_kj_per_kg_k: f64,
-    /// Density, kg/m³.
-    pub density_kg_per_m3: f64,
-    /// Mass fraction of vapour, 0 to 1, in a saturated state; absent in a single phase.
-    pub quality: Option<f64>,
-}
-
-/// Liquid and vapour in equilibrium.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Saturation {
-    /// Temperature, °C.
-    pub temperature_c: f64,
-    /// Pressure, kPa absolute.
-    pub pressure_kpa: f64,
-    /// Saturated liquid, quality 0.
-    pub liquid: StatePoint,
-    /// Saturated vapour, quality 1.
-    pub vapour: StatePoint,
-}
-
-impl Saturation {
-    /// The mixture that holds the mass fraction `quality` of vapour.
-    fn mixture(&self, quality: f64) -> StatePoint {
-        let blend = |liquid: f64, vapour: f64| liquid + quality * (vapour - liquid);
-        let (liquid, vapour) = (&self.liquid, &self.vapour);
-        StatePoint {
-            temperature_c: self.temperature_c,
-            pressure_kpa: self.pressure_kpa,
-            enthalpy_kj_per_kg: blend(liquid.enthalpy_kj_per_kg, vapour.enthalpy_kj_per_kg),
-            entropy_kj_per_kg_k: blend(liquid.entropy_kj_per_kg_k, vapour.entropy_kj_per_kg_k),
-            density_kg_per_m3: 1.0
-                / blend(
-                    1.0 / liquid.density_kg_per_m3,
-                    1.0 / vapour.density_kg_per_m3,
-                ),
-            quality: Some(quality),
-        }
-    }
-}
-
-/// What is known of a state on an isobar beside its pressure.
-#[derive(Clone, Copy)]
-enum Known {
-    Enthalpy(f64),
-    Entropy(f64),
-}
-
-impl Known {
-    fn wanted(self) -> f64 {
-        match self {
-            Known::Enthalpy(value) | Known::Entropy(value) => value,
-        }
-    }
-
-    fn of(self, point: &StatePoint) -> f64 {
-        match self {
-            Known::Enthalpy(_) => point.enthalpy_kj_per_kg,
-            Known::Entropy(_) => point.entropy_kj_per_kg_k,
-        }
-    }
-
-    /// Slope with temperature at constant pressure, from the isobaric heat capacity.
-    fn slope(self, heat_capacity: f64, temperature_k: f64) -> f64 {
-        match self {
-            Known::Enthalpy(_) => heat_capacity,
-            Known::Entropy(_) => heat_capacity / temperature_k,
-        }
-    }
-
-    fn label(self) -> (&'static str, &'static str) {
-        match self {
-            Known::Enthalpy(_) => ("enthalpy", "kJ/kg"),
-            Known::Entropy(_) => ("entropy", "kJ/kgK"),
-        }
-    }
-}
 
 /// The reference equation of one refrigerant, exact and slow (tens of microseconds a state).
 ///
@@ -145,12 +57,13 @@ impl Known {
 /// # Ok::<(), winterledger::refrigerant::PropertyError>(())
 /// ```
 pub struct Equation {
-    helmholtz: Helmholtz,
+    pub(super) helmholtz: Helmholtz,
+    dome: Dome,
     enthalpy_offset: f64,
     entropy_offset: f64,
     /// Saturated states at the two ends of the range, without offset.
     ends: [Phase; 2],
-    greatest_liquid_density: f64,
+    pub(super) greatest_liquid_density: f64,
 }
 
 impl Equation {
@@ -161,15 +74,23 @@ impl Equation {
     /// [`PropertyError::Coefficients`] if a built-in file is damaged (the tests load every one).
     pub fn new(refrigerant: Refrigerant) -> Result<Equation, PropertyError> {
         let helmholtz = Helmholtz::new(refrigerant)?;
-        let (reference, _) = helmholtz.equilibrium(REFERENCE_TEMPERATURE_C + ZERO_CELSIUS_K)?;
-        let (coldest, _) = helmholtz.equilibrium(LOWEST_TEMPERATURE_C + ZERO_CELSIUS_K)?;
-        let (hottest, _) =
-            helmholtz.equilibrium(helmholtz.critical_temperature_k - CRITICAL_MARGIN_K)?;
+        let lowest_k = LOWEST_TEMPERATURE_C + ZERO_CELSIUS_K;
+        let critical_k = helmholtz.critical_temperature_k;
+        let dome = Dome::follow(
+            &helmholtz,
+            lowest_k - BEYOND_THE_ENDS_K,
+            critical_k - DOME_MARGIN_K + BEYOND_THE_ENDS_K,
+        )?;
+        let at = |temperature_k: f64| dome.equilibrium(&helmholtz, temperature_k);
+        let (reference, _) = at(REFERENCE_TEMPERATURE_C + ZERO_CELSIUS_K)?;
+        let (coldest, _) = at(lowest_k)?;
+        let (hottest, _) = at(critical_k - CRITICAL_MARGIN_K)?;
         Ok(Equation {
             enthalpy_offset: REFERENCE_ENTHALPY_KJ_PER_KG - reference.enthalpy,
             entropy_offset: REFERENCE_ENTROPY_KJ_PER_KG_K - reference.entropy,
             ends: [coldest, hottest],
             greatest_liquid_density: GREATEST_LIQUID_FRACTION * coldest.density,
+            dome,
             helmholtz,
         })
     }
@@ -187,6 +108,19 @@ impl Equation {
     /// Critical pressure, kPa.
     pub fn critical_pressure_kpa(&self) -> f64 {
         self.helmholtz.critical_pressure_kpa
+    }
+
+    /// The critical state, at the critical temperature and density of the publication.
+    ///
+    /// # Errors
+    ///
+    /// [`PropertyError::NotConverged`] if the equation cannot be evaluated there.
+    pub fn critical_point(&self) -> Result<StatePoint, PropertyError> {
+        let helmholtz = &self.helmholtz;
+        helmholtz
+            .phase(helmholtz.critical_temperature_k, helmholtz.critical_density)
+            .map(|phase| self.point(phase, None))
+            .ok_or_else(|| self.not_converged("critical state", self.critical_pressure_kpa(), None))
     }
 
     /// Lowest and highest temperature of saturation offered, °C.
@@ -221,7 +155,30 @@ impl Equation {
             temperature_c,
             self.saturation_range_c(),
         )?;
-        let (liquid, vapour) = self.helmholtz.equilibrium(temperature_c + ZERO_CELSIUS_K)?;
+        self.equilibrium(temperature_c)
+    }
+
+    /// Saturations from a temperature in °C to just below the critical point, closer together towards
+    /// it: the dome of a pressure–enthalpy diagram.
+    ///
+    /// # Errors
+    ///
+    /// As [`Equation::saturation`]; also when fewer than two are asked for.
+    pub fn dome(&self, from_c: f64, count: usize) -> Result<Vec<Saturation>, PropertyError> {
+        let first = self.saturation(from_c)?.temperature_c;
+        let what = ("number of points on the dome", "");
+        let count_range = (2.0, MOST_DOME_POINTS);
+        let last = PropertyError::check(self.refrigerant(), what, count as f64, count_range)? - 1.0;
+        let top = self.critical_temperature_c() - DOME_MARGIN_K;
+        (0..count)
+            // towards its top the dome is as flat as the cube of the distance from its middle
+            .map(|index| top - (top - first) * (1.0 - index as f64 / last).powi(3))
+            .map(|temperature_c| self.equilibrium(temperature_c))
+            .collect()
+    }
+
+    fn equilibrium(&self, temperature_c: f64) -> Result<Saturation, PropertyError> {
+        let (liquid, vapour) = self.saturated_phases(temperature_c + ZERO_CELSIUS_K)?;
         Ok(Saturation {
             temperature_c,
             pressure_kpa: vapour.pressure,
@@ -254,7 +211,7 @@ impl Equation {
         let bracket = (self.ends[0].temperature_k, self.ends[1].temperature_k);
         let temperature_k =
             increasing_root(bracket, start, TEMPERATURE_TOLERANCE, |temperature_k| {
-                let (liquid, vapour) = self.helmholtz.equilibrium(temperature_k).ok()?;
+                let (liquid, vapour) = self.saturated_phases(temperature_k).ok()?;
                 let slope = (vapour.enthalpy - liquid.enthalpy)
                     / (temperature_k * (1.0 / vapour.density - 1.0 / liquid.density));
                 Some((vapour.pressure.ln() - wanted, slope / vapour.pressure))
@@ -326,147 +283,15 @@ impl Equation {
         )
     }
 
-    /// [`Equation::at_temperature_pressure`] on the isobar of a saturation that is already known.
-    ///
-    /// # Errors
-    ///
-    /// [`PropertyError`] outside [`Equation::temperature_range_c`].
-    pub fn beside_at_temperature(
+    /// Saturated liquid and vapour at a temperature in K.
+    pub(super) fn saturated_phases(
         &self,
-        saturation: &Saturation,
-        temperature_c: f64,
-    ) -> Result<StatePoint, PropertyError> {
-        self.single_phase(saturation, self.check_temperature(temperature_c)?)
-    }
-
-    fn single_phase(
-        &self,
-        saturation: &Saturation,
-        temperature_c: f64,
-    ) -> Result<StatePoint, PropertyError> {
-        let above_saturation = temperature_c - saturation.temperature_c;
-        if above_saturation.abs() <= SATURATION_WIDTH_K {
-            return Ok(saturation.vapour);
-        }
-        let temperature_k = temperature_c + ZERO_CELSIUS_K;
-        let vapour = above_saturation > 0.0;
-        self.density(saturation, vapour, temperature_k, None)
-            .and_then(|density| self.helmholtz.phase(temperature_k, density))
-            .map(|phase| StatePoint {
-                temperature_c,
-                pressure_kpa: saturation.pressure_kpa,
-                ..self.point(phase, None)
-            })
-            .ok_or_else(|| {
-                self.not_converged(
-                    "density",
-                    saturation.pressure_kpa,
-                    Some((temperature_c, "°C")),
-                )
-            })
-    }
-
-    /// [`Equation::at_pressure_entropy`] on the isobar of a saturation that is already known.
-    ///
-    /// # Errors
-    ///
-    /// [`PropertyError`] when the resulting temperature lies outside the range.
-    pub fn beside_at_entropy(
-        &self,
-        saturation: &Saturation,
-        entropy_kj_per_kg_k: f64,
-    ) -> Result<StatePoint, PropertyError> {
-        self.beside(saturation, Known::Entropy(entropy_kj_per_kg_k))
-    }
-
-    /// [`Equation::at_pressure_enthalpy`] on the isobar of a saturation that is already known.
-    ///
-    /// # Errors
-    ///
-    /// [`PropertyError`] when the resulting temperature lies outside the range.
-    pub fn beside_at_enthalpy(
-        &self,
-        saturation: &Saturation,
-        enthalpy_kj_per_kg: f64,
-    ) -> Result<StatePoint, PropertyError> {
-        self.beside(saturation, Known::Enthalpy(enthalpy_kj_per_kg))
-    }
-
-    fn beside(&self, saturation: &Saturation, known: Known) -> Result<StatePoint, PropertyError> {
-        let wanted = known.wanted();
-        let (liquid, vapour) = (known.of(&saturation.liquid), known.of(&saturation.vapour));
-        if (liquid..=vapour).contains(&wanted) {
-            return Ok(saturation.mixture((wanted - liquid) / (vapour - liquid)));
-        }
-        let is_vapour = wanted > vapour;
-        let saturated_k = saturation.temperature_c + ZERO_CELSIUS_K;
-        let bracket = if is_vapour {
-            (saturated_k, HIGHEST_TEMPERATURE_C + ZERO_CELSIUS_K)
-        } else {
-            (LOWEST_TEMPERATURE_C + ZERO_CELSIUS_K, saturated_k)
-        };
-        let mut density = None;
-        let found = increasing_root(
-            bracket,
-            saturated_k,
-            TEMPERATURE_TOLERANCE,
-            |temperature_k| {
-                density = Some(self.density(saturation, is_vapour, temperature_k, density)?);
-                let (phase, heat_capacity) = self
-                    .helmholtz
-                    .phase_and_heat_capacity(temperature_k, density?)?;
-                let value = known.of(&self.point(phase, None)) - wanted;
-                Some((value, known.slope(heat_capacity, temperature_k)))
-            },
-        );
-        match found {
-            Some(temperature_k) => self.single_phase(saturation, temperature_k - ZERO_CELSIUS_K),
-            None => {
-                let coldest = self.beside_at_temperature(saturation, LOWEST_TEMPERATURE_C)?;
-                let hottest = self.beside_at_temperature(saturation, HIGHEST_TEMPERATURE_C)?;
-                let range = (known.of(&coldest), known.of(&hottest));
-                PropertyError::check(self.refrigerant(), known.label(), wanted, range)?;
-                let (_, unit) = known.label();
-                Err(self.not_converged(
-                    "temperature",
-                    saturation.pressure_kpa,
-                    Some((wanted, unit)),
-                ))
-            }
-        }
-    }
-
-    /// Density of liquid or vapour at a temperature on the isobar of a saturation.
-    fn density(
-        &self,
-        saturation: &Saturation,
-        vapour: bool,
         temperature_k: f64,
-        start: Option<f64>,
-    ) -> Option<f64> {
-        let (bracket, usual_start) = if vapour {
-            let saturated = saturation.vapour.density_kg_per_m3;
-            let ideal = saturated * (saturation.temperature_c + ZERO_CELSIUS_K) / temperature_k;
-            ((LEAST_VAPOUR_FRACTION * ideal, saturated), ideal)
-        } else {
-            // Not the liquid of this isobar: an isotherm crosses the dome in loops, and only beyond the
-            // saturated liquid of its own temperature is there no second density of the same pressure.
-            let saturated = self.helmholtz.equilibrium(temperature_k).ok()?.0.density;
-            ((saturated, self.greatest_liquid_density), saturated)
-        };
-        increasing_root(
-            bracket,
-            start.unwrap_or(usual_start),
-            DENSITY_TOLERANCE,
-            |density| {
-                let (pressure, slope) =
-                    self.helmholtz.pressure_and_slope(temperature_k, density)?;
-                Some((pressure - saturation.pressure_kpa, slope))
-            },
-        )
+    ) -> Result<(Phase, Phase), PropertyError> {
+        self.dome.equilibrium(&self.helmholtz, temperature_k)
     }
 
-    fn point(&self, phase: Phase, quality: Option<f64>) -> StatePoint {
+    pub(super) fn point(&self, phase: Phase, quality: Option<f64>) -> StatePoint {
         StatePoint {
             temperature_c: phase.temperature_k - ZERO_CELSIUS_K,
             pressure_kpa: phase.pressure,
@@ -477,7 +302,7 @@ impl Equation {
         }
     }
 
-    fn check_temperature(&self, temperature_c: f64) -> Result<f64, PropertyError> {
+    pub(super) fn check_temperature(&self, temperature_c: f64) -> Result<f64, PropertyError> {
         PropertyError::check(
             self.refrigerant(),
             ("temperature", "°C"),
@@ -495,7 +320,7 @@ impl Equation {
         )
     }
 
-    fn not_converged(
+    pub(super) fn not_converged(
         &self,
         solving: &'static str,
         pressure_kpa: f64,

@@ -42,6 +42,8 @@ pub struct Facts {
     pub critical_temperature_c: f64,
     /// Critical pressure, kPa (from the publication of its equation).
     pub critical_pressure_kpa: f64,
+    /// Whether it is a blend that is computed as if it were one substance.
+    pub pseudo_pure: bool,
     /// Safety class of ISO 817.
     pub safety_class: SafetyClass,
     /// 100-year global warming potential of IPCC AR4 (2007), where that report gives one.
@@ -56,22 +58,23 @@ pub struct Facts {
 
 const KELVIN: f64 = 273.15;
 
-const CAUTION_A1: &str = "Does not burn, but displaces air in closed rooms; only people licensed for \
+const CAUTION_A1: &str = "does not burn, but displaces air in closed rooms; only people licensed for \
     refrigerants may open the circuit.";
-const CAUTION_A2L: &str = "Mildly flammable (A2L): charge limits, ventilation and distance from \
+const CAUTION_A2L: &str = "mildly flammable (A2L): charge limits, ventilation and distance from \
     ignition sources follow local codes; only people licensed for flammable refrigerants may open \
     the circuit.";
-const CAUTION_A3: &str = "Highly flammable (A3): charge limits, a protective zone free of openings, \
+const CAUTION_A3: &str = "highly flammable (A3): charge limits, a protective zone free of openings, \
     drains and ignition sources, and siting follow local codes; only people licensed for flammable \
     refrigerants may open the circuit.";
 
-// GWP: IPCC AR4 WG1 Table 2.14 and AR5 WG1 Table 8.A.1 [from memory; the AR4 figures of R32, R410A and
+// GWP: IPCC AR4 WG1 Tables 2.14 and 2.15 and AR5 WG1 Table 8.A.1 [from memory; the AR4 figures of R32, R410A and
 // R134a agree with those in the fluid files of CoolProp 8.0.0]. Safety classes: ISO 817 [from memory].
 static R290: Facts = Facts {
     substance: "propane",
     molar_mass_g_per_mol: 44.09562,
     critical_temperature_c: 369.89 - KELVIN,
     critical_pressure_kpa: 4251.2,
+    pseudo_pure: false,
     safety_class: SafetyClass::A3,
     gwp100_ar4: Some(3.3),
     gwp100_ar5: None,
@@ -83,6 +86,7 @@ static R32: Facts = Facts {
     molar_mass_g_per_mol: 52.024,
     critical_temperature_c: 351.255 - KELVIN,
     critical_pressure_kpa: 5782.0,
+    pseudo_pure: false,
     safety_class: SafetyClass::A2L,
     gwp100_ar4: Some(675.0),
     gwp100_ar5: Some(677.0),
@@ -94,6 +98,7 @@ static R410A: Facts = Facts {
     molar_mass_g_per_mol: 72.5854,
     critical_temperature_c: 344.494 - KELVIN,
     critical_pressure_kpa: 4901.2,
+    pseudo_pure: true,
     safety_class: SafetyClass::A1,
     gwp100_ar4: Some(2087.5),
     gwp100_ar5: Some(1923.5),
@@ -106,6 +111,7 @@ static R134A: Facts = Facts {
     molar_mass_g_per_mol: 102.032,
     critical_temperature_c: 374.21 - KELVIN,
     critical_pressure_kpa: 4059.28,
+    pseudo_pure: false,
     safety_class: SafetyClass::A1,
     gwp100_ar4: Some(1430.0),
     gwp100_ar5: Some(1300.0),
@@ -117,6 +123,7 @@ static R1234YF: Facts = Facts {
     molar_mass_g_per_mol: 114.0416,
     critical_temperature_c: 367.85 - KELVIN,
     critical_pressure_kpa: 3384.4,
+    pseudo_pure: false,
     safety_class: SafetyClass::A2L,
     gwp100_ar4: None,
     gwp100_ar5: Some(1.0),
@@ -128,6 +135,7 @@ static R600A: Facts = Facts {
     molar_mass_g_per_mol: 58.1222,
     critical_temperature_c: 407.817 - KELVIN,
     critical_pressure_kpa: 3629.0,
+    pseudo_pure: false,
     safety_class: SafetyClass::A3,
     gwp100_ar4: None,
     gwp100_ar5: None,

@@ -6,16 +6,20 @@
 //! evaluates the equations (feos) is seen by `helmholtz.rs` alone and never leaves this room.
 
 mod chebyshev;
+mod dome;
 mod equation;
 mod error;
 mod facts;
 mod helmholtz;
+mod isobar;
 mod solve;
+mod state;
 mod table;
 
-pub use equation::{Equation, Saturation, StatePoint};
+pub use equation::Equation;
 pub use error::PropertyError;
 pub use facts::{Facts, SafetyClass};
+pub use state::{Saturation, StatePoint};
 pub use table::CycleTable;
 
 use serde::{Deserialize, Serialize};

@@ -1,1 +1,13 @@
-//! Cases side by side: levers and break-even.
+//! Cases side by side: what each system costs, its balance point, levers and break-even.
+
+mod balance;
+mod break_even;
+mod case;
+mod lever;
+mod outcome;
+
+pub use balance::{BalancePoint, balance_point};
+pub use break_even::{BreakEven, Crossing, break_even};
+pub use case::{Account, Case, Contender};
+pub use lever::Lever;
+pub use outcome::{Costs, Outcome, YearOutcome};

@@ -4,8 +4,12 @@
 //! own with one canonical unit, named by its accessor (`w_per_k()`), so a power cannot be read where a heat-loss
 //! coefficient is meant. A bare number is refused with what to write.
 
+mod fuel;
 mod measures;
+mod money;
 mod text;
 
+pub use fuel::{CalorificBasis, CalorificValue, Fuel, FuelUnit};
 pub use measures::*;
+pub use money::{Currency, Money, Price, parse_price};
 pub use text::{Measure, Unit, UnitProblem, parse, split_number};

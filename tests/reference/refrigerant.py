@@ -63,7 +63,9 @@ for fluid in FLUIDS:
     # saturation: every 5 K from -70 degC, then closer and closer to the critical point
     temperatures = [t for t in range(-70, 200, 5) if t < critical_c - 5]
     temperatures += [critical_c - d for d in (5.0, 3.0, 2.0, 1.0)]
-    for t in temperatures:
+    # where a solver without a guess was seen to leave the line of saturation (R290, R1234yf)
+    window = [80.13 + 0.005 * i for i in range(20) if critical_c > 90]
+    for t in temperatures + window:
         phases = []
         for quality in (0.0, 1.0):
             s.update(CP.QT_INPUTS, quality, t + K)
@@ -94,7 +96,7 @@ for fluid in FLUIDS:
     while done < 200:
         te = draw.uniform(-40, 25)
         tc = draw.uniform(max(15, te + 10), highest)
-        superheat, subcooling = draw.uniform(0.5, 15), draw.uniform(0.5, 12)
+        superheat, subcooling = draw.uniform(0.5, 15), draw.uniform(0.5, min(12, tc - te))
         efficiency = draw.uniform(0.45, 0.85)
         s.update(CP.QT_INPUTS, 1.0, te + K)
         low = s.p()
@@ -107,6 +109,8 @@ for fluid in FLUIDS:
         h2 = h1 + (h2s - h1) / efficiency
         s.update(CP.HmassP_INPUTS, h2, high)
         t2 = s.T() - K
+        if t2 > 200:  # no compressor reaches this; the least efficient corners of the draw do
+            continue
         s.update(CP.PT_INPUTS, high, tc - subcooling + K)
         h3 = s.hmass()
         cycles.append(

@@ -116,6 +116,7 @@ for fluid, (name, authors, year, title, journal, doi) in PAPERS.items():
         "gas_constant_j_per_mol_k": equation["gas_constant"],
         "critical_temperature_k": critical["T"],
         "critical_pressure_kpa": critical["p"] / 1000.0,
+        "critical_density_mol_per_m3": round(critical["rhomolar"], 9),
         "published_range_k": [equation["Ttriple"], equation["T_max"]],
         "record": {
             "identifier": {"cas": source["INFO"]["CAS"].split(".")[0], "name": fluid},

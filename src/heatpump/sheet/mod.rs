@@ -309,8 +309,8 @@ fn read_machine(
     let superheat = check.within(&raw.superheat, &CYCLE_SPREAD_K);
     let subcooling = check.within(&raw.subcooling, &CYCLE_SPREAD_K);
     let cycling = check.plain_within(&raw.cycling_coefficient, &CYCLING_COEFFICIENT);
-    let source_power = check.within(&raw.source_power, &AUXILIARY_KW);
-    let at_home = check.within(&raw.source_power_at_home, &AUXILIARY_KW);
+    let source_power = check.within(&raw.source_power, &bounds::AUXILIARY_KW);
+    let at_home = check.within(&raw.source_power_at_home, &bounds::AUXILIARY_KW);
     if let (Some(tested), Some(home), Some(leaf)) =
         (source_power, at_home, &raw.source_power_at_home)
         && home.kw() < tested.kw()
@@ -366,14 +366,6 @@ fn read_machine(
         greatest_current_a: current.map(|a| a.a()),
     })
 }
-
-/// Fan or pump power, from the shared bound in W.
-const AUXILIARY_KW: Bound = Bound {
-    label: bounds::AUXILIARY_W.label,
-    low: bounds::AUXILIARY_W.low / 1000.0,
-    high: bounds::AUXILIARY_W.high / 1000.0,
-    unit: "kW",
-};
 
 fn source_bound(kind: SourceKind) -> &'static Bound {
     match kind {
@@ -575,7 +567,7 @@ impl StatedIdle {
 fn read_idle(raw: &Section<RawIdlePower>, check: &mut Check) -> StatedIdle {
     StatedIdle(
         [&raw.standby, &raw.thermostat_off, &raw.crankcase, &raw.off]
-            .map(|leaf| check.within(leaf, &AUXILIARY_KW).map(|p| p.kw())),
+            .map(|leaf| check.within(leaf, &bounds::AUXILIARY_KW).map(|p| p.kw())),
     )
 }
 

@@ -1,0 +1,229 @@
+//! From cases and outcomes to the estimate.
+
+use std::collections::BTreeMap;
+
+use super::estimate::{
+    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+};
+use crate::problem::{Finding, Problems, Severity};
+use crate::study::{BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even};
+use crate::year::Heating;
+
+/// What an estimate tells beside the figures of its case.
+#[derive(Debug, Clone, Default)]
+pub struct Told {
+    /// What the home is called.
+    pub home_label: Option<String>,
+    /// Weather file as the brief names it.
+    pub weather_file: String,
+    /// What the carbon factors count.
+    pub carbon_scope: Option<String>,
+    /// What was assumed.
+    pub assumptions: Vec<Assumption>,
+    /// What was found while reading.
+    pub findings: Vec<Finding>,
+    /// The machine of each contender, in their order.
+    pub machines: Vec<Option<String>>,
+}
+
+/// Makes the estimate.
+///
+/// # Errors
+/// When a case cannot be run with a lever moved.
+pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimate, Problems> {
+    let mut findings = told.findings.clone();
+    let mut systems = Vec::with_capacity(outcomes.len());
+    let mut break_evens = BTreeMap::new();
+    for (i, (contender, outcome)) in case.contenders.iter().zip(outcomes).enumerate() {
+        let system = system(contender, outcome, outcomes, told.machines.get(i).cloned().flatten());
+        findings.extend(cautions(&system, contender));
+        if i > 0 {
+            let levers = [Lever::ElectricityRate, Lever::FuelRate, Lever::FlowTemperature];
+            let mut answers = Vec::new();
+            for lever in levers {
+                if let Some(found) = break_even(case, outcomes, i, lever)? {
+                    answers.push(lever_answer(&found, &system.label));
+                }
+            }
+            break_evens.insert(system.label.clone(), answers);
+        }
+        systems.push(system);
+    }
+    let site = &case.site;
+    let today = &case.contenders[0];
+    let fabric = &today.system.home.fabric;
+    Ok(Estimate {
+        weather: WeatherUsed {
+            file: told.weather_file.clone(),
+            hours: site.outdoor_c.len(),
+            years: site.years.len(),
+            mean_c: site.outdoor_c.iter().sum::<f64>() / site.outdoor_c.len() as f64,
+            min_c: site.outdoor_c.iter().copied().fold(f64::INFINITY, f64::min),
+            repaired_hours: site.repaired.iter().filter(|&&repaired| repaired).count(),
+        },
+        home: HomeUsed {
+            label: told.home_label.clone(),
+            heat_loss_w_per_k: fabric.heat_loss_w_per_k(),
+            design_outdoor_c: today.design_outdoor_c,
+            design_heat_load_kw: fabric.design_load_kw(today.indoor_c, today.design_outdoor_c),
+        },
+        systems,
+        break_even: break_evens,
+        currency: case.currency.code().to_owned(),
+        carbon_scope: told.carbon_scope.clone(),
+        assumptions: told.assumptions.clone(),
+        findings,
+    })
+}
+
+fn system(
+    contender: &Contender,
+    outcome: &Outcome,
+    all: &[Outcome],
+    machine: Option<String>,
+) -> SystemAnswer {
+    let sums = outcome.mean_sums();
+    let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
+    let burns_fuel = matches!(contender.system.heating, Heating::Boiler { .. });
+    let balance = |with_hot_water| match &contender.system.heating {
+        Heating::HeatPump(machine) => {
+            balance_point(&contender.system, machine, contender.indoor_c, with_hot_water)
+        }
+        _ => None,
+    };
+    let balance_points = (balance(false), balance(true));
+    let today = &all[0];
+    let compared = |mine: f64, todays: f64| (!contender.today).then_some(todays - mine);
+    let costs = &outcome.costs;
+    SystemAnswer {
+        label: contender.system.label.clone(),
+        kind: contender.kind.to_owned(),
+        today: contender.today,
+        machine,
+        space_heat_kwh: sums.space_heat_kwh(),
+        hot_water_kwh: sums.water_heat_kwh(),
+        delivered_kwh: sums.space_heat_kwh() + sums.water_drawn_kwh,
+        electricity_kwh: sums.electricity_kwh(),
+        backup_kwh: is_machine.then_some(sums.backup_kwh + sums.immersion_kwh),
+        fuel_kwh: burns_fuel.then_some(sums.fuel_kwh),
+        spf_h1: sums.spf_h1(),
+        spf_h2: sums.spf_h2(),
+        spf_h3: sums.spf_h3(),
+        spf_h4: sums.spf_h4(),
+        seasonal_efficiency: sums.fuel_efficiency(),
+        balance_point_c: balance_points.0.and_then(BalancePoint::c),
+        balance_point_with_hot_water_c: balance_points.1.and_then(BalancePoint::c),
+        balance_point: balance_points.0.map(balance_words),
+        peak_electric_kw: outcome.years.iter().map(|year| year.peak_electric_kw).fold(0.0, f64::max),
+        hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
+        hours_short: outcome.mean(|year| f64::from(year.hours_short)),
+        min_indoor_c: outcome.years.iter().map(|year| year.min_indoor_c).fold(f64::INFINITY, f64::min),
+        starts: is_machine.then_some(sums.starts),
+        cost: costs.total,
+        cost_energy: costs.energy,
+        cost_standing: costs.standing,
+        cost_tax: costs.tax,
+        carbon_kg: sums.carbon_kg,
+        saving: compared(costs.total, today.costs.total),
+        carbon_saving_kg: compared(sums.carbon_kg, today.mean_sums().carbon_kg),
+        capital: contender.capital,
+        monthly: (0..12)
+            .map(|month0| {
+                let month = outcome.mean_month(month0);
+                MonthAnswer {
+                    heat_kwh: month.space_heat_kwh() + month.water_heat_kwh(),
+                    electricity_kwh: month.electricity_kwh(),
+                    fuel_kwh: burns_fuel.then_some(month.fuel_kwh),
+                    cost: costs.months[month0],
+                }
+            })
+            .collect(),
+        by_year: outcome
+            .years
+            .iter()
+            .zip(&costs.by_year)
+            .map(|(year, &cost)| YearAnswer { year: year.year, cost, spf_h4: year.sums.spf_h4() })
+            .collect(),
+    }
+}
+
+fn balance_words(point: BalancePoint) -> String {
+    match point {
+        BalancePoint::At(c) => format!("{c:.1} °C"),
+        BalancePoint::BelowRange(c) => format!("below {c:.0} °C"),
+        BalancePoint::AboveRange(c) => format!("above {c:.0} °C: the machine never carries the load"),
+    }
+}
+
+/// What someone could be hurt or left cold by.
+fn cautions(system: &SystemAnswer, contender: &Contender) -> Vec<Finding> {
+    let mut cautions = Vec::new();
+    let label = &system.label;
+    if system.hours_short >= 0.5 {
+        cautions.push(Finding::new(
+            Severity::Caution,
+            format!(
+                "\"{label}\" leaves the rooms more than 1 K below the set point in {:.0} hours a year, down to {:.1} °C",
+                system.hours_short, system.min_indoor_c
+            ),
+            "a larger machine, backup heat or larger emitters would be needed; size from a room-by-room heat-loss calculation by a competent person",
+        ));
+    }
+    let store = contender.system.home.hot_water.as_ref().and_then(|water| water.store);
+    /// UK HSE guidance: stored hot water at 60 °C, arriving at the taps at no less than 50 °C within a minute.
+    const HYGIENE_C: f64 = 60.0;
+    if let Some(store) = store
+        && store.set_point_c < HYGIENE_C
+    {
+        cautions.push(Finding::new(
+            Severity::Caution,
+            format!("\"{label}\" keeps hot water at {:.0} °C", store.set_point_c),
+            "below 60 °C legionella can grow: a regular hygiene cycle is usual, and water above 50 °C scalds; follow local rules and a licensed installer",
+        ));
+    }
+    cautions
+}
+
+fn lever_answer(found: &BreakEven, label: &str) -> LeverAnswer {
+    let bound = found.lever.bound();
+    LeverAnswer {
+        lever: bound.label.to_owned(),
+        unit: bound.unit.to_owned(),
+        now: found.now,
+        values: found.crossings.iter().map(|crossing| crossing.value).collect(),
+        between: [bound.low, bound.high],
+        sentence: sentence(found, label),
+    }
+}
+
+fn sentence(found: &BreakEven, label: &str) -> String {
+    let bound = found.lever.bound();
+    let amount = |value: f64| match found.lever {
+        Lever::ElectricityRate | Lever::FuelRate | Lever::HeatLoss => {
+            let percent = (value - 1.0) * 100.0;
+            if percent >= 0.0 {
+                format!("{percent:.0} % higher than now")
+            } else {
+                format!("{:.0} % lower than now", -percent)
+            }
+        }
+        Lever::FlowTemperature => format!("{value:.0} °C (now {:.0} °C)", found.now),
+        Lever::FieldFactor => format!("{value:.2} (now {:.2})", found.now),
+    };
+    match found.crossings.as_slice() {
+        [] => format!(
+            "No {} between {} and {} {} makes \"{label}\" cost what today's system costs.",
+            bound.label, bound.low, bound.high, bound.unit
+        ),
+        crossings => {
+            let parts: Vec<_> = crossings
+                .iter()
+                .map(|crossing| {
+                    let side = if crossing.cheaper_above { "above" } else { "below" };
+                    format!("{} and is cheaper {side} it", amount(crossing.value))
+                })
+                .collect();
+            format!("\"{label}\" breaks even at a {} of {}.", bound.label, parts.join("; and again at "))
+        }
+    }
+}

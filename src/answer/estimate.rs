@@ -1,0 +1,200 @@
+//! The answer of `estimate`. Field names are a promise to whoever reads the JSON; absent means absent, never 0.
+
+use std::collections::BTreeMap;
+
+use serde::Serialize;
+
+use crate::problem::Finding;
+
+/// The comparison of all systems of a brief.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct Estimate {
+    /// The weather it was run on.
+    pub weather: WeatherUsed,
+    /// The home.
+    pub home: HomeUsed,
+    /// Today's system first, then the choices in the order of the brief.
+    pub systems: Vec<SystemAnswer>,
+    /// What would make each choice cost what today's system costs, by the choice's label.
+    pub break_even: BTreeMap<String, Vec<LeverAnswer>>,
+    /// Currency of every amount, ISO 4217.
+    pub currency: String,
+    /// What the carbon factors count.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub carbon_scope: Option<String>,
+    /// What was assumed and where it is from.
+    pub assumptions: Vec<Assumption>,
+    /// What was odd and what was done about it.
+    pub findings: Vec<Finding>,
+}
+
+/// The weather an estimate was run on.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct WeatherUsed {
+    /// File as the brief names it.
+    pub file: String,
+    /// Hours run.
+    pub hours: usize,
+    /// Years they make.
+    pub years: usize,
+    /// Mean outdoor temperature.
+    pub mean_c: f64,
+    /// Lowest outdoor temperature.
+    pub min_c: f64,
+    /// Hours that were repaired.
+    pub repaired_hours: usize,
+}
+
+/// The home an estimate was run for, as it is today.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct HomeUsed {
+    /// What it is called.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub label: Option<String>,
+    /// Heat-loss coefficient.
+    pub heat_loss_w_per_k: f64,
+    /// Design outdoor temperature.
+    pub design_outdoor_c: f64,
+    /// Steady loss from the set point at the design temperature, gains not counted.
+    pub design_heat_load_kw: f64,
+}
+
+/// One system: figures of a mean year.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct SystemAnswer {
+    /// What it is called.
+    pub label: String,
+    /// Kind, as the brief writes it.
+    pub kind: String,
+    /// Whether it heats the home today.
+    pub today: bool,
+    /// The machine, where there is one, and that it is a typical one where no datasheet was given.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub machine: Option<String>,
+    /// Heat to the rooms.
+    pub space_heat_kwh: f64,
+    /// Heat to hot water, before the store.
+    pub hot_water_kwh: f64,
+    /// Heat to the rooms and hot water at the taps.
+    pub delivered_kwh: f64,
+    /// Electricity of the heating.
+    pub electricity_kwh: f64,
+    /// Electricity of backup and immersion heater.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub backup_kwh: Option<f64>,
+    /// Fuel on gross calorific value.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub fuel_kwh: Option<f64>,
+    /// Seasonal performance factor, machine alone.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub spf_h1: Option<f64>,
+    /// With fan or brine pump.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub spf_h2: Option<f64>,
+    /// With backup and immersion heater.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub spf_h3: Option<f64>,
+    /// With all auxiliaries.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub spf_h4: Option<f64>,
+    /// Heat over fuel, gross, where fuel is burnt.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub seasonal_efficiency: Option<f64>,
+    /// Outdoor temperature below which the machine alone does not hold the set point, hot water not counted.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub balance_point_c: Option<f64>,
+    /// The same with the mean power of hot water.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub balance_point_with_hot_water_c: Option<f64>,
+    /// The balance point in words, also when it lies outside the range looked at.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub balance_point: Option<String>,
+    /// Highest hourly mean of electric power; no supply check.
+    pub peak_electric_kw: f64,
+    /// Hours with backup or immersion heater.
+    pub hours_backup: f64,
+    /// Hours that ended more than 1 K below the set point.
+    pub hours_short: f64,
+    /// Lowest indoor temperature of all years.
+    pub min_indoor_c: f64,
+    /// Starts of the compressor.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub starts: Option<f64>,
+    /// Yearly cost.
+    pub cost: f64,
+    /// Energy of it, before tax that is added.
+    pub cost_energy: f64,
+    /// Standing and demand charges of it, before tax that is added.
+    pub cost_standing: f64,
+    /// Tax of it that is added.
+    pub cost_tax: f64,
+    /// Greenhouse gas, CO2 equivalent.
+    pub carbon_kg: f64,
+    /// Today's cost less this; absent for today's system.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub saving: Option<f64>,
+    /// Today's carbon less this; absent for today's system.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub carbon_saving_kg: Option<f64>,
+    /// What it costs to put in.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub capital: Option<f64>,
+    /// January to December of a mean year.
+    pub monthly: Vec<MonthAnswer>,
+    /// Each year of the weather.
+    pub by_year: Vec<YearAnswer>,
+}
+
+/// One month of a mean year.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct MonthAnswer {
+    /// Heat to rooms and hot water.
+    pub heat_kwh: f64,
+    /// Electricity.
+    pub electricity_kwh: f64,
+    /// Fuel.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub fuel_kwh: Option<f64>,
+    /// Cost.
+    pub cost: f64,
+}
+
+/// One year of the weather.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct YearAnswer {
+    /// Year.
+    pub year: i32,
+    /// Cost.
+    pub cost: f64,
+    /// Seasonal performance factor with all auxiliaries.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub spf_h4: Option<f64>,
+}
+
+/// What one lever would have to be.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct LeverAnswer {
+    /// The quantity.
+    pub lever: String,
+    /// Its unit.
+    pub unit: String,
+    /// Where it stands.
+    pub now: f64,
+    /// Values at which the choice costs what today's system costs; empty when there is none in the range.
+    pub values: Vec<f64>,
+    /// The range that was looked at.
+    pub between: [f64; 2],
+    /// The same as a sentence.
+    pub sentence: String,
+}
+
+/// Something that was assumed.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
+pub struct Assumption {
+    /// What.
+    pub name: String,
+    /// How much.
+    pub value: String,
+    /// Where it is from.
+    pub from: String,
+}

@@ -1,0 +1,58 @@
+//! Every default in one cited table: it feeds the reading, `--show-defaults` and the list of assumptions.
+
+/// A default: the field it stands for, its value as a brief would write it, and where it is from.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct Default {
+    /// Field of the brief.
+    pub field: &'static str,
+    /// Value as a brief writes it.
+    pub value: &'static str,
+    /// Source, or that there is none.
+    pub from: &'static str,
+}
+
+macro_rules! defaults {
+    ($($name:ident = $field:literal, $value:literal, $from:literal;)*) => {
+        $(pub(super) const $name: Default = Default { field: $field, value: $value, from: $from };)*
+        /// Every default.
+        pub const DEFAULTS: &[Default] = &[$($name),*];
+    };
+}
+
+defaults! {
+    INDOOR = "home.indoor", "20 °C", "common practice, no source";
+    TIME_ZONE = "home.time_zone", "Etc/UTC", "common practice, no source";
+    CONSTRUCTION = "home.construction", "medium",
+        "165 kJ/K per m² of floor area, ISO 13790:2008 table 12 (from memory)";
+    TIME_CONSTANT = "home.time_constant", "40 h",
+        "common practice, no source; used when there is no floor area";
+    INTERNAL_GAINS_PER_M2 = "home.internal_gains", "4 W",
+        "per m² of floor area: common practice, no source";
+    SOLAR_APERTURE_PER_M2 = "home.solar_aperture", "3 %",
+        "of the floor area: common practice, no source";
+    BASE_TEMPERATURE = "home.base_temperature", "15.5 °C",
+        "UK degree-day convention; used when gains are not given and the weather has no radiation or the home no floor area";
+    EMITTER_KIND = "home.emitters.kind", "radiators", "common practice, no source";
+    GREATEST_FLOW_ABOVE_DESIGN = "home.emitters.greatest_flow", "10 K",
+        "above the design flow temperature: common practice, no source";
+    HOT_WATER_DAILY = "home.hot_water.daily_energy", "4 kWh",
+        "typical UK use (published field figure, secondary source)";
+    DRAWN_AT = "home.hot_water.drawn_at", "40 °C", "convention of Regulation (EU) No 811/2013 draws";
+    COLD_WATER = "home.hot_water.cold", "10 °C", "common practice, no source";
+    STORE = "home.hot_water.store", "200 L", "common practice, no source";
+    SET_POINT = "home.hot_water.setpoint", "50 °C", "common practice, no source";
+    HYSTERESIS = "home.hot_water.hysteresis", "5 K", "common practice, no source";
+    RATED_AT_AIR = "choice.rated_at", "7 °C / 35 °C", "EN 14511 standard rating condition";
+    RATED_AT_GROUND = "choice.rated_at", "0 °C / 35 °C", "EN 14511 standard rating condition";
+    BACKUP = "choice.backup", "0 kW", "none unless it is given";
+    IMMERSION = "choice.immersion", "3 kW", "common practice, no source";
+    CIRCULATION_PUMP = "choice.circulation_pump", "25 W", "common practice, no source";
+    MACHINE_FIELD_FACTOR = "choice.field_factor", "85 %",
+        "lab-to-field factor of Ruhnau et al. 2019, doi 10.1038/s41597-019-0199-y";
+    BOILER_FIELD_FACTOR = "today.field_factor", "92 %",
+        "published field efficiency 82.5 to 85.3 % gross over the ideal flue-loss curve (from memory)";
+    LOOP_DEPTH = "choice.loop_depth", "1.2 m", "common practice, no source";
+    SOIL_DIFFUSIVITY = "choice.soil_diffusivity", "5e-7 m²/s", "moist loam: common practice, no source";
+    BOILER_OUTPUT = "today.output", "24 kW", "common practice, no source";
+    BACKUP_BAND = "backup starts below the set point by", "0.5 K", "common practice, no source";
+}

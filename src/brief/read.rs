@@ -1,0 +1,195 @@
+//! Reading a brief into a case, with every problem found in one pass.
+
+use std::collections::HashMap;
+use std::path::Path;
+use std::sync::Arc;
+
+use chrono_tz::Tz;
+use schemars::Schema;
+
+use super::energy::{Energy, energy};
+use super::files::Folder;
+use super::home::WeatherFacts;
+use super::notes::Notes;
+use super::raw;
+use super::system::{Surroundings, contender};
+use super::weather::weather;
+use super::{defaults, demo};
+use crate::answer::Told;
+use crate::calendar::CivilHour;
+use crate::document::{Check, Document, Section, read_text};
+use crate::problem::Problems;
+use crate::study::Case;
+use crate::weather::Weather;
+use crate::year::Site;
+
+/// A brief that can be run.
+#[derive(Debug, Clone)]
+pub struct Brief {
+    /// The systems side by side.
+    pub case: Case,
+    /// What the estimate tells beside the figures.
+    pub told: Told,
+}
+
+impl Brief {
+    /// Reads a brief and the files it names.
+    ///
+    /// # Errors
+    /// Every problem of the brief and of the files it names.
+    pub fn read(path: &Path) -> Result<Self, Problems> {
+        let text = read_text(path)?;
+        let folder = path.parent().map(Path::to_owned).unwrap_or_default();
+        Self::parse(&path.display().to_string(), &text, &Folder::Disk(folder))
+    }
+
+    /// The demonstration brief that is built in.
+    ///
+    /// # Errors
+    /// As [`Brief::read`]; a test holds that there are none.
+    pub fn demonstration() -> Result<Self, Problems> {
+        let folder = Folder::Embedded(demo::FOLDER);
+        let text = folder.text(demo::BRIEF)?;
+        Self::parse(&folder.name(demo::BRIEF), &text, &folder)
+    }
+
+    /// JSON Schema of a brief.
+    pub fn schema() -> Schema {
+        Document::<raw::Brief>::schema()
+    }
+
+    fn parse(file: &str, text: &str, folder: &Folder) -> Result<Self, Problems> {
+        let (raw, mut check) = Document::<raw::Brief>::read(file, text)?;
+        let brief = build(&raw, folder, &mut check);
+        check.finish(brief)
+    }
+}
+
+/// Builds what can be built and checks everything else all the same, so that no problem waits for another to be mended.
+fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> {
+    let mut notes = Notes::default();
+    let start = 0..0;
+    if raw.home.is_none() {
+        check.missing(&start, "home", "a table [home] with heat_loss and emitters");
+    }
+    if raw.today.is_none() {
+        check.missing(&start, "today", "a table [today] with kind = \"gas-boiler\"");
+    }
+    if raw.choice.is_empty() {
+        check.missing(&start, "choice", "at least one table [[choice]] with kind = \"air-source\"");
+    }
+    if raw.energy.is_none() {
+        check.missing(&start, "energy", "a table [energy] with electricity and gas tariffs");
+    }
+    let label = raw.home.as_ref().and_then(|home| check.value(&home.label));
+    let zone = time_zone(raw.home.as_ref(), check, &mut notes);
+    let weather = weather(raw.weather.as_ref(), folder, check);
+    let site = weather.as_ref().zip(zone).map(|(weather, zone)| Arc::new(site(weather, zone)));
+    let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
+    labels_differ(raw, check);
+
+    // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
+    let facts = weather.as_ref().map_or(WeatherFacts { design_c: -5.0, has_radiation: true }, facts);
+    let mut contenders = Vec::new();
+    let mut machines = Vec::new();
+    let mut findings = weather.as_ref().map_or_else(Vec::new, |weather| weather.findings.clone());
+    if let Some(home) = &raw.home {
+        let systems = raw.today.iter().map(|today| (today, true));
+        for (table, today) in systems.chain(raw.choice.iter().map(|choice| (choice, false))) {
+            let surroundings = Surroundings {
+                home,
+                facts: &facts,
+                site: site.as_deref(),
+                energy: energy.as_ref(),
+                folder,
+                today,
+            };
+            if let Some(made) = contender(table, &surroundings, check, &mut notes) {
+                contenders.push(made.contender);
+                machines.push(made.machine);
+                findings.extend(made.findings);
+            }
+        }
+    }
+    let Energy { currency, carbon_scope, .. } = energy?;
+    let (weather, site, zone) = (weather?, site?, zone?);
+    Some(Brief {
+        case: Case { site, time_zone: zone, currency, contenders },
+        told: Told {
+            home_label: label,
+            weather_file: weather.file,
+            carbon_scope: Some(carbon_scope),
+            assumptions: notes.into_vec(),
+            findings,
+            machines,
+        },
+    })
+}
+
+fn time_zone(
+    home: Option<&Section<raw::Home>>,
+    check: &mut Check,
+    notes: &mut Notes,
+) -> Option<Tz> {
+    let Some(leaf) = home.and_then(|home| home.time_zone.as_ref()) else {
+        notes.used(&defaults::TIME_ZONE);
+        return defaults::TIME_ZONE.value.parse().ok();
+    };
+    let name = check.value(&home?.time_zone)?;
+    let zone = name.parse().ok();
+    if zone.is_none() {
+        check.refuse(
+            &leaf.span(),
+            format!("\"{name}\""),
+            "a time zone of the tz database, such as \"Europe/London\" or \"Etc/UTC\"",
+            "write area and city as the tz database does",
+        );
+    }
+    zone
+}
+
+fn site(weather: &Weather, zone: Tz) -> Site {
+    let civil = weather.axis.civil(zone);
+    Site {
+        axis: weather.axis,
+        month0: civil.iter().map(CivilHour::month0).map(|month0| u8::try_from(month0).unwrap_or(0)).collect(),
+        civil,
+        years: weather.years(),
+        outdoor_c: weather.outdoor_c.clone(),
+        relative_humidity: weather.relative_humidity.clone(),
+        global_w_per_m2: weather.global_w_per_m2.clone(),
+        repaired: weather.repaired.clone(),
+    }
+}
+
+fn facts(weather: &Weather) -> WeatherFacts {
+    /// Share of the hours that are colder than the design temperature.
+    const COLDER: f64 = 0.004;
+    let mut sorted = weather.outdoor_c.clone();
+    sorted.sort_by(f64::total_cmp);
+    let place = (COLDER * sorted.len() as f64) as usize;
+    WeatherFacts {
+        design_c: sorted.get(place).copied().unwrap_or(0.0),
+        has_radiation: weather.global_w_per_m2.is_some(),
+    }
+}
+
+/// Results are named by label: each must be there once.
+fn labels_differ(raw: &raw::Brief, check: &mut Check) {
+    let mut seen: HashMap<String, usize> = HashMap::new();
+    for table in raw.today.iter().chain(&raw.choice) {
+        let Some(leaf) = &table.label else { continue };
+        let Ok(label) = leaf.value() else { continue };
+        let line = check.place(&leaf.span()).line.unwrap_or(0);
+        if let Some(first) = seen.get(label) {
+            check.refuse(
+                &leaf.span(),
+                format!("a second system called \"{label}\", the first is in line {first}"),
+                "a label of its own for every system",
+                "say in the label what makes it different",
+            );
+        } else {
+            seen.insert(label.clone(), line);
+        }
+    }
+}

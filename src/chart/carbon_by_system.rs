@@ -1,0 +1,173 @@
+//! Carbon of a year, system by system, split by where it comes from.
+
+use super::bars::{self, Bar, Part};
+use super::numbers::{self, Marks};
+use super::palette::{AZURE, BROWN, Hatch, MINT};
+use super::scene::Scene;
+use super::{ChartError, Picture, finite, named};
+
+const PICTURE: &str = "carbon of a year";
+
+/// What is drawn.
+#[derive(Debug, Clone, PartialEq)]
+pub struct CarbonBySystem {
+    /// The systems, in the order they are to stand.
+    pub systems: Vec<SystemCarbon>,
+    /// What the factors cover, for the subtitle, for example "generation and losses, average of the year".
+    pub scope: String,
+}
+
+/// Carbon of one system in kg CO2e of a year.
+#[derive(Debug, Clone, PartialEq)]
+pub struct SystemCarbon {
+    /// Name.
+    pub label: String,
+    /// Whether this is what heats the home today.
+    pub today: bool,
+    /// From electricity.
+    pub electricity_kg: f64,
+    /// From fuel burnt in the home.
+    pub fuel_kg: f64,
+    /// From refrigerant that escapes.
+    pub refrigerant_kg: f64,
+}
+
+impl SystemCarbon {
+    /// The whole of a year.
+    pub fn total(&self) -> f64 {
+        self.electricity_kg + self.fuel_kg + self.refrigerant_kg
+    }
+}
+
+const PARTS: [Part; 3] = [
+    ("Electricity", AZURE, Hatch::Plain),
+    ("Fuel burnt at home", BROWN, Hatch::Plain),
+    ("Refrigerant that escapes", MINT, Hatch::Rising),
+];
+
+/// Draws the carbon of a year.
+///
+/// # Errors
+/// [`ChartError::Empty`] without systems, [`ChartError::NotFinite`] for a value that is not a number.
+pub fn carbon_by_system(data: &CarbonBySystem, marks: &Marks) -> Result<Picture, ChartError> {
+    if data.systems.is_empty() {
+        return Err(ChartError::Empty {
+            picture: PICTURE,
+            missing: "no system was given",
+        });
+    }
+    for s in &data.systems {
+        for (part, value) in [
+            ("electricity", s.electricity_kg),
+            ("fuel", s.fuel_kg),
+            ("refrigerant", s.refrigerant_kg),
+        ] {
+            finite(
+                PICTURE,
+                [(format!("carbon of {part} of “{}”", s.label).as_str(), value)],
+            )?;
+        }
+    }
+    let kg = |v: f64| format!("{}\u{a0}kg", marks.number(v, 0));
+    let today = data.systems.iter().find(|s| s.today);
+    let bars: Vec<Bar<'_>> = data
+        .systems
+        .iter()
+        .map(|s| Bar {
+            label: &s.label,
+            today: s.today,
+            parts: vec![s.electricity_kg, s.fuel_kg, s.refrigerant_kg],
+            remark: match today {
+                Some(today) if !s.today => bars::difference(s.total(), today.total(), &kg),
+                _ => String::new(),
+            },
+        })
+        .collect();
+    // A part that no system has needs no place in the key.
+    let used = |i: usize| bars.iter().any(|b| b.parts[i] != 0.0);
+    let keep: Vec<usize> = (0..3).filter(|&i| i < 2 || used(i)).collect();
+    let parts: Vec<Part> = keep.iter().map(|&i| PARTS[i]).collect();
+
+    let title = "Carbon of a year";
+    let scope = super::font::clean(&data.scope);
+    let mut subtitle = String::from("Greenhouse gases in kg CO₂e");
+    subtitle += &if scope.is_empty() {
+        ".".into()
+    } else {
+        format!(": {scope}.")
+    };
+    if today.is_some() && data.systems.len() > 1 {
+        subtitle += " The dashed mark is today’s system.";
+    }
+    let mut scene = Scene::new(f64::MAX);
+    let top = scene.heading(title, &subtitle);
+    bars::draw(
+        &mut scene,
+        top,
+        &bars,
+        &parts,
+        "Carbon of a year, kg CO₂e",
+        &kg,
+        marks,
+    );
+    Ok(Picture::new(title, alt(data, &bars, &kg), scene))
+}
+
+fn alt(data: &CarbonBySystem, bars: &[Bar<'_>], kg: &dyn Fn(f64) -> String) -> String {
+    let mut out = format!(
+        "Bar chart of the greenhouse gases of a year, in kg CO₂e, {} {}.",
+        bars.len(),
+        if bars.len() == 1 { "system" } else { "systems" }
+    );
+    for (system, bar) in data.systems.iter().zip(bars) {
+        let parts: Vec<String> = [
+            ("electricity", system.electricity_kg),
+            ("fuel", system.fuel_kg),
+            ("refrigerant", system.refrigerant_kg),
+        ]
+        .iter()
+        .filter(|(_, v)| *v != 0.0)
+        .map(|(name, v)| format!("{name} {}", kg(*v)))
+        .collect();
+        let from = if parts.is_empty() {
+            String::new()
+        } else {
+            format!(", made of {}", numbers::list(&parts))
+        };
+        let when = if system.today { " (today)" } else { "" };
+        out += &format!(
+            " {}{when}: {}{}{from}.",
+            named(&system.label),
+            kg(system.total()),
+            bars::against_today(&bar.remark)
+        );
+    }
+    out
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn carbon_is_compared_with_today_and_zero_stays_zero() {
+        let system = |today, electricity_kg, fuel_kg| SystemCarbon {
+            label: "System".into(),
+            today,
+            electricity_kg,
+            fuel_kg,
+            refrigerant_kg: 0.0,
+        };
+        let data = CarbonBySystem {
+            systems: vec![system(true, 20.0, 2300.0), system(false, 0.0, 0.0)],
+            scope: String::new(),
+        };
+        let picture = carbon_by_system(&data, &Marks::default()).unwrap();
+        let texts: Vec<&str> = picture.labels().iter().map(|l| l.text.as_str()).collect();
+        assert!(
+            texts.contains(&"0\u{a0}kg") && texts.contains(&"2,320\u{a0}kg less"),
+            "{texts:?}"
+        );
+        assert!(!texts.contains(&"Refrigerant that escapes"));
+    }
+}

@@ -1,0 +1,126 @@
+//! `estimate`: what each system of a brief would cost in a year.
+
+use std::path::PathBuf;
+
+use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
+use crate::answer::{Estimate, compose};
+use crate::brief::{Brief, DEFAULTS};
+use crate::chart::{AnnualCost, Marks, SystemCost, annual_cost};
+use crate::report::{estimate_text, ledger_csv};
+use crate::year::Ledger;
+
+/// Yearly cost and carbon of every system of a brief, beside what heats the home today.
+///
+/// Without a brief it runs the demonstration home that is built in.
+#[derive(Debug, clap::Args)]
+#[command(after_help = "\
+Examples:
+  winterledger estimate                                 the built-in demonstration home
+  winterledger estimate briefs/terrace.toml --out out   one ledger a system, result.json, charts
+  winterledger estimate --format json                   the same figures for another program")]
+pub struct Args {
+    /// Brief (TOML); without one, the built-in demonstration home.
+    brief: Option<PathBuf>,
+    /// Folder for the ledgers (CSV), result.json and the charts.
+    #[arg(long, value_name = "DIR")]
+    out: Option<PathBuf>,
+    /// Overwrite files that are there already.
+    #[arg(long)]
+    force: bool,
+    /// How to print the result.
+    #[arg(long, value_enum, default_value_t)]
+    format: Format,
+    /// Print every default with its source, and stop.
+    #[arg(long)]
+    show_defaults: bool,
+}
+
+/// Runs the command.
+///
+/// # Errors
+/// When the brief cannot be used or a file cannot be written.
+pub fn run(args: &Args) -> Result<(), Failure> {
+    if args.show_defaults {
+        let lines: Vec<_> = DEFAULTS
+            .iter()
+            .map(|default| format!("{} = {}  ({})", default.field, default.value, default.from))
+            .collect();
+        return print(&lines.join("\n"));
+    }
+    let brief = match &args.brief {
+        Some(path) => Brief::read(path)?,
+        None => Brief::demonstration()?,
+    };
+    let mut ledgers = Vec::new();
+    let mut outcomes = Vec::with_capacity(brief.case.contenders.len());
+    for contender in &brief.case.contenders {
+        let mut ledger =
+            args.out.as_ref().map(|_| Ledger::with_capacity(brief.case.site.outdoor_c.len()));
+        outcomes.push(brief.case.run_one(contender, ledger.as_mut())?);
+        ledgers.extend(ledger);
+    }
+    let estimate = compose(&brief.case, &outcomes, &brief.told)?;
+    if let Some(folder) = &args.out {
+        let mut files = pictures(&estimate, folder)?;
+        for (i, (contender, ledger)) in brief.case.contenders.iter().zip(&ledgers).enumerate() {
+            let name = format!("ledger-{}-{}.csv", i + 1, file_name(&contender.system.label));
+            let content = ledger_csv(ledger, &brief.case.site.axis, brief.case.time_zone)
+                .map_err(|error| cannot_write(folder, &error))?;
+            files.push(NewFile::new(folder.join(name), content));
+        }
+        let json = serde_json::to_vec_pretty(&estimate)
+            .map_err(|error| cannot_write(folder, &error))?;
+        files.push(NewFile::new(folder.join("result.json"), json));
+        write_files(&files, args.force)?;
+    }
+    warn(&estimate.findings);
+    match args.format {
+        Format::Json => print_json(&estimate),
+        Format::Text => print(&estimate_text(&estimate)),
+    }
+}
+
+fn pictures(estimate: &Estimate, folder: &std::path::Path) -> Result<Vec<NewFile>, Failure> {
+    let data = AnnualCost {
+        currency: estimate.currency.clone(),
+        systems: estimate
+            .systems
+            .iter()
+            .map(|system| SystemCost {
+                label: system.label.clone(),
+                today: system.today,
+                energy: system.cost_energy,
+                standing: system.cost_standing,
+                tax: system.cost_tax,
+            })
+            .collect(),
+    };
+    let picture =
+        annual_cost(&data, &Marks::default()).map_err(|error| cannot_write(folder, &error))?;
+    let png = picture.png().map_err(|error| cannot_write(folder, &error))?;
+    let svg = picture.svg().map_err(|error| cannot_write(folder, &error))?;
+    Ok(vec![
+        NewFile::new(folder.join("annual-cost.svg"), svg),
+        NewFile::new(folder.join("annual-cost.png"), png),
+    ])
+}
+
+fn cannot_write(folder: &std::path::Path, error: &dyn std::fmt::Display) -> Failure {
+    Failure::Write { path: folder.to_owned(), reason: error.to_string() }
+}
+
+/// A label as a file name: lower-case letters and digits, everything else one hyphen.
+fn file_name(label: &str) -> String {
+    /// Longest name, characters.
+    const LONGEST: usize = 60;
+    let mut name = String::new();
+    for character in label.chars().flat_map(char::to_lowercase) {
+        if character.is_alphanumeric() {
+            name.push(character);
+        } else if !name.ends_with('-') && !name.is_empty() {
+            name.push('-');
+        }
+    }
+    let name: String = name.trim_end_matches('-').chars().take(LONGEST).collect();
+    if name.is_empty() { "system".to_owned() } else { name }
+}

@@ -1,0 +1,100 @@
+//! The balance point: the outdoor temperature below which the machine alone no longer holds the set point.
+
+use argmin::core::{CostFunction, Error, Executor, State as _};
+use argmin::solver::brent::BrentRoot;
+
+use crate::heatpump::ColdSide;
+use crate::source::Source;
+use crate::year::{MachineSystem, System};
+
+/// Outdoor temperatures between which a balance point is looked for, °C.
+const RANGE_C: (f64, f64) = (-35.0, 20.0);
+/// The balance point is solved to this many kelvins.
+const TOLERANCE_K: f64 = 1e-4;
+/// Iterations of Brent's method; each at least halves the interval every second step.
+const MAX_ITERATIONS: u64 = 100;
+
+/// Where a machine's greatest output meets the load.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum BalancePoint {
+    /// At this outdoor temperature, °C.
+    At(f64),
+    /// The machine carries the load at every temperature down to this, °C.
+    BelowRange(f64),
+    /// The machine does not carry the load even at this, °C.
+    AboveRange(f64),
+}
+
+impl BalancePoint {
+    /// The temperature when it was found.
+    pub fn c(self) -> Option<f64> {
+        match self {
+            Self::At(c) => Some(c),
+            Self::BelowRange(_) | Self::AboveRange(_) => None,
+        }
+    }
+}
+
+/// Surplus of a machine over the home's load at an outdoor temperature, kW.
+struct Surplus<'a> {
+    system: &'a System,
+    machine: &'a MachineSystem,
+    indoor_c: f64,
+    water_kw: f64,
+}
+
+impl Surplus<'_> {
+    fn at(&self, outdoor_c: f64) -> f64 {
+        let home = &self.system.home;
+        let load_kw = home.fabric.design_load_kw(self.indoor_c, outdoor_c).max(0.0);
+        let cold = match &self.machine.source {
+            Source::OutdoorAir => ColdSide { open_c: outdoor_c, k_per_kw: 0.0, relative_humidity: None },
+            // A cold night meets the ground at its coldest.
+            Source::Ground(ground) => ColdSide {
+                open_c: self.machine.source.lowest_c(&[]),
+                k_per_kw: ground.resistance_k_per_kw,
+                relative_humidity: None,
+            },
+        };
+        let flow_c = home.emitters.at_load(load_kw, self.indoor_c).flow_c;
+        self.machine.machine.greatest_output_kw(&cold, flow_c) - load_kw - self.water_kw
+    }
+}
+
+impl CostFunction for Surplus<'_> {
+    type Param = f64;
+    type Output = f64;
+
+    fn cost(&self, outdoor_c: &f64) -> Result<f64, Error> {
+        Ok(self.at(*outdoor_c))
+    }
+}
+
+/// The balance point of a machine: the load is the steady loss from the set point without gains, as for the design heat
+/// load; `with_hot_water` adds the mean power of the day's hot water.
+///
+/// Nothing when the solver does not converge.
+pub fn balance_point(
+    system: &System,
+    machine: &MachineSystem,
+    indoor_c: f64,
+    with_hot_water: bool,
+) -> Option<BalancePoint> {
+    let daily_kwh = system.home.hot_water.as_ref().map_or(0.0, |water| water.daily_kwh);
+    let water_kw = if with_hot_water { daily_kwh / 24.0 } else { 0.0 };
+    let surplus = Surplus { system, machine, indoor_c, water_kw };
+    let (low_c, high_c) = RANGE_C;
+    if surplus.at(low_c) >= 0.0 {
+        return Some(BalancePoint::BelowRange(low_c));
+    }
+    if surplus.at(high_c) <= 0.0 {
+        return Some(BalancePoint::AboveRange(high_c));
+    }
+    let solver = BrentRoot::new(low_c, high_c, TOLERANCE_K);
+    let solved = Executor::new(surplus, solver)
+        .configure(|state| state.param(low_c).max_iters(MAX_ITERATIONS))
+        .run()
+        .ok()?;
+    let at_c = *solved.state().get_best_param()?;
+    Some(BalancePoint::At(at_c))
+}

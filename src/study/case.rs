@@ -1,0 +1,103 @@
+//! A case: one home's weather, and the systems that could heat it.
+
+use std::sync::Arc;
+
+use chrono_tz::Tz;
+
+use super::outcome::{Outcome, YearOutcome, price};
+use crate::bill::Connection;
+use crate::problem::Problems;
+use crate::tariff::{Meter, Tariff};
+use crate::units::Currency;
+use crate::year::{Ledger, Metered, Plan, Site, State, System, Totals, run};
+
+/// One home's weather, and the systems that could heat it.
+#[derive(Debug, Clone)]
+pub struct Case {
+    /// Weather and clock, shared by all.
+    pub site: Arc<Site>,
+    /// The home's clock.
+    pub time_zone: Tz,
+    /// What everything is paid in.
+    pub currency: Currency,
+    /// Today's system first, then the choices.
+    pub contenders: Vec<Contender>,
+}
+
+/// A tariff and the meter that counts under it over the axis.
+#[derive(Debug, Clone)]
+pub struct Account {
+    /// What is charged.
+    pub tariff: Arc<Tariff>,
+    /// How hours are sorted for it.
+    pub meter: Arc<Meter>,
+}
+
+/// One system with its plan and what it is charged.
+#[derive(Debug, Clone)]
+pub struct Contender {
+    /// Kind of system, as results name it.
+    pub kind: &'static str,
+    /// Whether it is what heats the home today.
+    pub today: bool,
+    /// Home and heating.
+    pub system: System,
+    /// Set points and signals.
+    pub plan: Plan,
+    /// Electricity.
+    pub electricity: Account,
+    /// The fuel it burns, or that the home keeps for something else.
+    pub fuel: Option<Account>,
+    /// Indoor set point, °C.
+    pub indoor_c: f64,
+    /// Design outdoor temperature, °C.
+    pub design_outdoor_c: f64,
+    /// What it costs to put in, in the case's currency.
+    pub capital: Option<f64>,
+}
+
+impl Case {
+    /// Runs every system through every year of the weather.
+    ///
+    /// # Errors
+    /// When a bill cannot be made, such as a missing hourly price.
+    pub fn run(&self) -> Result<Vec<Outcome>, Problems> {
+        self.contenders.iter().map(|contender| self.run_one(contender, None)).collect()
+    }
+
+    /// Runs one system through every year, keeping its rows in a ledger where one is given.
+    ///
+    /// # Errors
+    /// When a bill cannot be made.
+    pub fn run_one(
+        &self,
+        contender: &Contender,
+        mut ledger: Option<&mut Ledger>,
+    ) -> Result<Outcome, Problems> {
+        let site = &*self.site;
+        let (system, plan) = (&contender.system, &contender.plan);
+        let mut state = State::at_rest(system, contender.indoor_c);
+        let mut metered = Metered::new(
+            &contender.electricity.meter,
+            contender.fuel.as_ref().map(|fuel| &*fuel.meter),
+        );
+        let mut years = Vec::with_capacity(site.years.len());
+        for (year, hours) in &site.years {
+            let mut totals = Totals::new(&site.month0);
+            let mut sink = (&mut totals, &mut metered, ledger.as_deref_mut());
+            run(site, system, plan, hours.clone(), &mut state, &mut sink);
+            years.push(YearOutcome::new(*year, &totals));
+        }
+        let Metered { electricity, fuel, .. } = metered;
+        let costs = price(contender, &site.years, &electricity, fuel.as_ref())?;
+        Ok(Outcome { years, electricity, fuel, costs })
+    }
+}
+
+impl Contender {
+    /// Whether the fuel's standing charge goes on.
+    pub fn connection(&self) -> Connection {
+        // An account is only held when the system burns the fuel or the home keeps it.
+        Connection::Kept
+    }
+}

@@ -1,0 +1,144 @@
+//! What a system's years came to.
+
+use std::ops::Range;
+
+use rust_decimal::Decimal;
+use rust_decimal::prelude::ToPrimitive;
+
+use super::case::{Account, Contender};
+use crate::bill::{Bill, price_reading};
+use crate::problem::Problems;
+use crate::tariff::Reading;
+use crate::year::{Sums, Totals};
+
+/// Money of a mean year, in currency units.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct Costs {
+    /// Everything.
+    pub total: f64,
+    /// Energy before tax that is added.
+    pub energy: f64,
+    /// Standing and demand charges before tax that is added.
+    pub standing: f64,
+    /// Tax that is added.
+    pub tax: f64,
+    /// Total of each civil month.
+    pub months: [f64; 12],
+    /// Total of each year of the weather.
+    pub by_year: Vec<f64>,
+}
+
+/// One year of a system.
+#[derive(Debug, Clone, PartialEq)]
+pub struct YearOutcome {
+    /// Year of the weather.
+    pub year: i32,
+    /// Hours of it.
+    pub hours: u32,
+    /// Sums by civil month.
+    pub months: [Sums; 12],
+    /// Sums of the year.
+    pub sums: Sums,
+    /// Lowest indoor temperature, °C.
+    pub min_indoor_c: f64,
+    /// Greatest hourly mean of electric power, kW.
+    pub peak_electric_kw: f64,
+    /// Hours in which backup or immersion heater ran.
+    pub hours_backup: u32,
+    /// Hours that ended short of heat.
+    pub hours_short: u32,
+}
+
+impl YearOutcome {
+    pub(super) fn new(year: i32, totals: &Totals<'_>) -> Self {
+        Self {
+            year,
+            hours: totals.hours,
+            months: totals.months,
+            sums: totals.all(),
+            min_indoor_c: totals.min_indoor_c,
+            peak_electric_kw: totals.peak_electric_kw,
+            hours_backup: totals.hours_backup,
+            hours_short: totals.hours_short,
+        }
+    }
+}
+
+/// All years of a system.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Outcome {
+    /// Year by year.
+    pub years: Vec<YearOutcome>,
+    /// What the electricity meter read over all years.
+    pub electricity: Reading,
+    /// What the fuel meter read over all years.
+    pub fuel: Option<Reading>,
+    /// Money of a mean year.
+    pub costs: Costs,
+}
+
+impl Outcome {
+    /// Mean of a figure over the years.
+    pub fn mean(&self, figure: impl Fn(&YearOutcome) -> f64) -> f64 {
+        self.years.iter().map(figure).sum::<f64>() / self.years.len() as f64
+    }
+
+    /// Sums of a mean year.
+    pub fn mean_sums(&self) -> Sums {
+        let mut mean = Sums::default();
+        for year in &self.years {
+            mean.add_scaled(&year.sums, 1.0 / self.years.len() as f64);
+        }
+        mean
+    }
+
+    /// Sums of a civil month of a mean year.
+    pub fn mean_month(&self, month0: usize) -> Sums {
+        let mut mean = Sums::default();
+        for year in &self.years {
+            mean.add_scaled(&year.months[month0], 1.0 / self.years.len() as f64);
+        }
+        mean
+    }
+}
+
+/// Prices readings of all years under a contender's tariffs.
+///
+/// # Errors
+/// When a reading is not a number or below 0.
+pub(super) fn price(
+    contender: &Contender,
+    years: &[(i32, Range<usize>)],
+    electricity: &Reading,
+    fuel: Option<&Reading>,
+) -> Result<Costs, Problems> {
+    let mut costs = Costs { by_year: vec![0.0; years.len()], ..Costs::default() };
+    add(&mut costs, years, &bill(contender, &contender.electricity, electricity)?);
+    if let (Some(account), Some(reading)) = (&contender.fuel, fuel) {
+        add(&mut costs, years, &bill(contender, account, reading)?);
+    }
+    Ok(costs)
+}
+
+fn bill(contender: &Contender, account: &Account, reading: &Reading) -> Result<Bill, Problems> {
+    price_reading(&account.tariff, &account.meter, reading, contender.connection())
+}
+
+/// Decimal amounts of a household are far inside what an `f64` holds exactly to the cent.
+fn number(amount: Decimal) -> f64 {
+    amount.to_f64().unwrap_or(f64::NAN)
+}
+
+fn add(costs: &mut Costs, years: &[(i32, Range<usize>)], bill: &Bill) {
+    let count = years.len() as f64;
+    costs.total += number(bill.total()) / count;
+    costs.energy += number(bill.energy() + bill.export().unwrap_or_default()) / count;
+    costs.standing += number(bill.standing() + bill.demand()) / count;
+    costs.tax += bill.tax().map_or(0.0, number) / count;
+    for month in &bill.months {
+        costs.months[month.month0] += number(month.amount) / count;
+        // A few hours of a UTC year can fall into the civil year beside it: they stay with their weather year.
+        let place = years.partition_point(|(year, _)| *year < month.year).min(years.len() - 1);
+        costs.by_year[place] += number(month.amount);
+    }
+}

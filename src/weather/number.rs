@@ -1,0 +1,131 @@
+//! Numbers and missing markers as files write them, read from bytes.
+
+/// Texts that stand for a missing reading, letter case aside.
+const MISSING_TEXTS: [&[u8]; 16] = [
+    b"", b"na", b"n/a", b"nan", b"null", b"nil", b"none", b"-", b"--", b"---", b"m", b"missing",
+    b"*", b"***", b"?", b"#n/a",
+];
+/// Digits that fit a whole number of `f64` exactly.
+const EXACT_DIGITS: usize = 15;
+/// Powers of ten that are exact in `f64` and that this many digits can need.
+const TENS: [f64; EXACT_DIGITS + 1] = [
+    1e0, 1e1, 1e2, 1e3, 1e4, 1e5, 1e6, 1e7, 1e8, 1e9, 1e10, 1e11, 1e12, 1e13, 1e14, 1e15,
+];
+
+/// A field of readings.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) enum Reading {
+    /// A number; it may still be infinite or absurd.
+    Number(f64),
+    /// A text that stands for nothing.
+    Missing,
+    /// Anything else.
+    Other,
+}
+
+/// Reads one field.
+///
+/// Up to 15 digits without an exponent are read exactly as `str::parse` would: both parts of the quotient are exact, so
+/// one division rounds once. Everything else is left to `str::parse`.
+pub(super) fn read(field: &[u8], decimal_comma: bool, missing: &[Vec<u8>]) -> Reading {
+    let field = field.trim_ascii();
+    if !missing.is_empty() && missing.iter().any(|m| m.eq_ignore_ascii_case(field)) {
+        return Reading::Missing;
+    }
+    let point = if decimal_comma { b',' } else { b'.' };
+    let (negative, digits) = match field {
+        [b'-', rest @ ..] => (true, rest),
+        [b'+', rest @ ..] => (false, rest),
+        _ => (false, field),
+    };
+    let (mut whole, mut count, mut after_point, mut plain): (u64, usize, Option<usize>, bool) =
+        (0, 0, None, true);
+    for &byte in digits {
+        if byte.is_ascii_digit() && count < EXACT_DIGITS {
+            whole = whole * 10 + u64::from(byte - b'0');
+            count += 1;
+            after_point = after_point.map(|n| n + 1);
+        } else if byte == point && after_point.is_none() {
+            after_point = Some(0);
+        } else {
+            plain = false;
+            break;
+        }
+    }
+    if plain && count > 0 {
+        let number = whole as f64 / TENS[after_point.unwrap_or(0).min(EXACT_DIGITS)];
+        return Reading::Number(if negative { -number } else { number });
+    }
+    slow(field, decimal_comma)
+}
+
+#[cold]
+fn slow(field: &[u8], decimal_comma: bool) -> Reading {
+    if MISSING_TEXTS
+        .iter()
+        .any(|text| text.eq_ignore_ascii_case(field))
+    {
+        return Reading::Missing;
+    }
+    let Ok(text) = std::str::from_utf8(field) else {
+        return Reading::Other;
+    };
+    // The minus sign of typeset text.
+    let text = text.replace('−', "-");
+    let text = if decimal_comma {
+        text.replace(',', ".")
+    } else {
+        text
+    };
+    match text.parse::<f64>() {
+        Ok(number) if number.is_nan() => Reading::Missing,
+        Ok(number) => Reading::Number(number),
+        Err(_) => Reading::Other,
+    }
+}
+
+/// Whether a number is one of those that files write for a missing reading: ±99, ±99.9, ±999, ±999.9, …
+///
+/// They are taken for missing only where they are impossible as readings.
+pub(super) fn is_marker(number: f64) -> bool {
+    const MARKERS: [f64; 12] = [
+        99.0, 99.9, 999.0, 999.9, 9999.0, 9999.9, 99_999.0, 99_999.9, 999_999.0, 32_767.0,
+        32_768.0, 8888.0,
+    ];
+    MARKERS.contains(&number.abs())
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+
+    #[test]
+    fn numbers_and_markers_are_told_apart() {
+        let read = |text: &str| read(text.as_bytes(), false, &[b"void".to_vec()]);
+        assert_eq!(read(" -3.50 "), Reading::Number(-3.5));
+        assert_eq!(read("+.5"), Reading::Number(0.5));
+        assert_eq!(read("−3"), Reading::Number(-3.0));
+        assert_eq!(read("1e3"), Reading::Number(1000.0));
+        assert_eq!(read("1e308"), Reading::Number(1e308));
+        assert_eq!(read("inf"), Reading::Number(f64::INFINITY));
+        for text in ["", "NaN", "N/A", "-", "---", "Void", "null"] {
+            assert_eq!(read(text), Reading::Missing, "{text}");
+        }
+        for text in ["1,5", "12 °C", "abc", "1.2.3", "."] {
+            assert_eq!(read(text), Reading::Other, "{text}");
+        }
+        assert_eq!(super::read(b"-1,5", true, &[]), Reading::Number(-1.5));
+    }
+
+    proptest! {
+        /// The short way must be the library's own reading to the last bit.
+        #[test]
+        fn the_fast_way_is_exact(mantissa in -999_999_999_999_999i64..=999_999_999_999_999, decimals in 0usize..=15) {
+            let digits = format!("{:0>width$}", mantissa.abs(), width = decimals + 1);
+            let (a, b) = digits.split_at(digits.len() - decimals);
+            let text = format!("{}{a}.{b}", if mantissa < 0 { "-" } else { "" });
+            prop_assert_eq!(read(text.as_bytes(), false, &[]), Reading::Number(text.parse().unwrap()));
+        }
+    }
+}

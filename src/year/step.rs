@@ -1,0 +1,362 @@
+//! One hour: weather, demand, offer, machine, backup, row.
+
+use std::ops::Range;
+
+use super::Sink;
+use super::row::{Flags, Row};
+use super::site::{Plan, Site};
+use super::system::{Heating, MachineSystem, State, System};
+use crate::heater::Boiler;
+use crate::heatpump::{ColdSide, Delivered, Duty};
+use crate::home::{Home, StoreStep, WaterTemperatures};
+
+/// Rooms this much below the set point at the end of an hour are short of heat, K. A choice of ours: about what people notice.
+const SHORT_K: f64 = 1.0;
+
+/// Return to a boiler while it makes hot water, °C. Common practice, no source.
+const BOILER_WATER_RETURN_C: f64 = 55.0;
+
+/// Less than this part of an hour is not worth a start, h.
+const LEAST_RUN_H: f64 = 1e-6;
+
+/// The two duties of an hour: each has its own flow temperature and so its own COP.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum DutyKind {
+    /// A block of hot water, first.
+    HotWater,
+    /// The rooms, in what is left of the hour.
+    SpaceHeat,
+}
+
+/// Watches what a machine is asked and what it delivers, for [`crate::heatpump`]'s explanation of an hour.
+pub trait Probe {
+    /// Sees one duty of the hour.
+    fn see(&mut self, kind: DutyKind, cold: &ColdSide, duty: &Duty, delivered: &Delivered);
+}
+
+/// Watches nothing.
+pub struct Unwatched;
+
+impl Probe for Unwatched {
+    fn see(&mut self, _: DutyKind, _: &ColdSide, _: &Duty, _: &Delivered) {}
+}
+
+/// Runs hours of the axis, carrying the state, and hands each row to the sink.
+pub fn run<S: Sink>(
+    site: &Site,
+    system: &System,
+    plan: &Plan,
+    hours: Range<usize>,
+    state: &mut State,
+    sink: &mut S,
+) {
+    for hour in hours {
+        let row = step(hour, site, system, plan, state, &mut Unwatched);
+        sink.take(hour, &row);
+    }
+}
+
+/// Steps one hour of the axis.
+///
+/// The columns of site and plan must be as long as the axis.
+pub fn step<P: Probe>(
+    hour: usize,
+    site: &Site,
+    system: &System,
+    plan: &Plan,
+    state: &mut State,
+    probe: &mut P,
+) -> Row {
+    let home = &system.home;
+    let outdoor_c = site.outdoor_c[hour];
+    let set_point_c = plan.set_point_c[hour];
+    let sun_w_per_m2 = site
+        .global_w_per_m2
+        .as_ref()
+        .map_or(0.0, |column| column[hour]);
+    let gains_kw = home.fabric.gains_kw(sun_w_per_m2);
+
+    let mut row = Row {
+        outdoor_c,
+        set_point_c,
+        gains_kwh: gains_kw,
+        electricity_price: plan.electricity.price[hour],
+        fuel_price: plan.fuel.as_ref().map(|fuel| fuel.price[hour]),
+        flags: Flags::WEATHER_REPAIRED.when(site.repaired[hour]),
+        ..Row::default()
+    };
+
+    // What is asked: hot water by the clock, the rooms by their set point.
+    let water = draw(home, site.civil[hour].hour, state, &mut row);
+    let reach = |target_c| {
+        home.fabric
+            .heat_to_reach_kwh(state.room_c, target_c, outdoor_c, gains_kw)
+    };
+    row.space_wanted_kwh = reach(set_point_c);
+    let rooms = Rooms {
+        wanted_kwh: row.space_wanted_kwh.min(home.emitters.greatest_output_kw()),
+        least_kwh: reach(plan.backup_below_c[hour]),
+        room_c: state.room_c,
+    };
+
+    // What answers.
+    match &system.heating {
+        Heating::HeatPump(system) => {
+            let offer = system.source.offer(hour, outdoor_c);
+            let cold = ColdSide {
+                open_c: offer.open_c,
+                k_per_kw: offer.k_per_kw,
+                relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
+            };
+            heat_pump_hour(system, home, &cold, &water, &rooms, &mut row, probe);
+        }
+        Heating::Boiler {
+            boiler,
+            fixed_flow_c,
+        } => {
+            boiler_hour(boiler, *fixed_flow_c, home, &water, &rooms, &mut row);
+        }
+        Heating::DirectElectric { output_kw } => {
+            row.heater_water_kwh = water.wanted_kwh.min(*output_kw);
+            row.heater_space_kwh = rooms.wanted_kwh.min(output_kw - row.heater_water_kwh);
+            row.heater_electricity_kwh = row.heater_water_kwh + row.heater_space_kwh;
+        }
+    }
+
+    // What it did to store and rooms.
+    store_hour(home, &water, state, &mut row);
+    let room = home.fabric.step(
+        state.room_c,
+        row.space_heat_kwh(),
+        outdoor_c,
+        gains_kw,
+        set_point_c,
+    );
+    state.room_c = room.end_c;
+    row.indoor_c = room.end_c;
+    row.fabric_loss_kwh = room.loss_kwh;
+    row.room_stored_kwh = room.stored_kwh;
+    row.aired_kwh = room.aired_kwh;
+    row.flags |= Flags::SHORT.when(room.end_c < set_point_c - SHORT_K);
+
+    // What it cost.
+    let electricity_kwh = row.electricity_kwh();
+    row.energy_cost = electricity_kwh * row.electricity_price
+        + row.fuel_price.map_or(0.0, |price| row.fuel_kwh * price);
+    row.carbon_kg = electricity_kwh * plan.electricity.carbon_kg[hour]
+        + plan
+            .fuel
+            .as_ref()
+            .map_or(0.0, |fuel| row.fuel_kwh * fuel.carbon_kg[hour]);
+    row
+}
+
+/// What the rooms want in an hour.
+struct Rooms {
+    /// Heat that holds the set point, as far as the emitters can carry it, kWh.
+    wanted_kwh: f64,
+    /// Heat that keeps them above the point where backup helps, kWh.
+    least_kwh: f64,
+    /// Their temperature at the beginning of the hour, °C.
+    room_c: f64,
+}
+
+/// Draws an hour's hot water and says what its heater must bring.
+fn draw(home: &Home, clock_hour: u8, state: &State, row: &mut Row) -> StoreStep {
+    let nothing = StoreStep {
+        before_c: state.store_c,
+        drawn_kwh: 0.0,
+        lost_kwh: 0.0,
+        wanted_kwh: 0.0,
+    };
+    let Some(water) = &home.hot_water else {
+        return nothing;
+    };
+    let drawn_kwh = water.drawn_kwh(clock_hour);
+    let step = match &water.store {
+        Some(store) => store.step(state.store_c, drawn_kwh, state.charging),
+        None => StoreStep {
+            drawn_kwh,
+            wanted_kwh: drawn_kwh,
+            ..nothing
+        },
+    };
+    row.water_drawn_kwh = step.drawn_kwh;
+    row.store_loss_kwh = step.lost_kwh;
+    step
+}
+
+/// Puts the hour's heat into the store.
+fn store_hour(home: &Home, water: &StoreStep, state: &mut State, row: &mut Row) {
+    let Some(store) = home.hot_water.as_ref().and_then(|water| water.store) else {
+        return;
+    };
+    let heat_kwh = row.water_heat_kwh();
+    row.store_stored_kwh = heat_kwh - water.drawn_kwh - water.lost_kwh;
+    state.store_c = store.charged_c(water.before_c, heat_kwh);
+    state.charging = water.wanted_kwh > 0.0 && heat_kwh < water.wanted_kwh * (1.0 - 1e-9);
+    row.store_c = Some(state.store_c);
+}
+
+/// A heat pump: a block of hot water first, the rooms in what is left of the hour, backup for what is missing.
+fn heat_pump_hour<P: Probe>(
+    system: &MachineSystem,
+    home: &Home,
+    cold: &ColdSide,
+    water: &StoreStep,
+    rooms: &Rooms,
+    row: &mut Row,
+    probe: &mut P,
+) {
+    let mut hours_left = 1.0;
+    if water.wanted_kwh > 0.0 {
+        let used = hot_water_block(system, home, cold, water, row, probe);
+        hours_left -= used;
+    }
+    if rooms.wanted_kwh > 0.0 {
+        if hours_left > LEAST_RUN_H {
+            let asked_kw = (rooms.wanted_kwh / hours_left).min(home.emitters.greatest_output_kw());
+            let warm = home.emitters.at_load(asked_kw, rooms.room_c);
+            let duty = Duty {
+                heat_kw: asked_kw,
+                flow_c: warm.flow_c,
+                spread_k: warm.flow_c - warm.return_c,
+                hours: hours_left,
+                at_full_output: false,
+            };
+            let delivered = system.machine.deliver(cold, &duty);
+            probe.see(DutyKind::SpaceHeat, cold, &duty, &delivered);
+            row.machine_space_kwh = delivered.heat_kwh;
+            row.machine_space_electricity_kwh = charge(row, &delivered);
+            row.space_cop = cop(delivered.heat_kwh, row.machine_space_electricity_kwh);
+            if delivered.heat_kwh > 0.0 {
+                row.space_flow_c = Some(delivered.flow_c);
+                row.space_return_c = Some(delivered.flow_c - delivered_spread_k(&duty, &delivered));
+            }
+        }
+        row.backup_kwh = (rooms.least_kwh - row.machine_space_kwh).clamp(0.0, system.backup_kw);
+        row.flags |= Flags::BACKUP.when(row.backup_kwh > 0.0);
+        row.circulation_kwh = system.circulation_kw * hours_left;
+    }
+    let idle = system.machine.idle();
+    let at_rest_kw = if row.running_hours > 0.0 || rooms.wanted_kwh > 0.0 {
+        idle.thermostat_off_kw
+    } else {
+        idle.standby_kw + idle.crankcase_kw
+    };
+    row.idle_kwh = at_rest_kw * (1.0 - row.running_hours).max(0.0);
+}
+
+/// Flow minus return while the machine runs: the design water flow carries the heat of the running time.
+fn delivered_spread_k(duty: &Duty, delivered: &Delivered) -> f64 {
+    let mean_kw = duty.heat_kw * duty.hours;
+    if mean_kw > 0.0 && delivered.running_hours > 0.0 {
+        duty.spread_k * (delivered.heat_kwh / delivered.running_hours) / duty.heat_kw
+    } else {
+        duty.spread_k
+    }
+}
+
+/// A block of hot water at full output; the immersion heater lifts what the machine cannot reach. Gives the hours used.
+fn hot_water_block<P: Probe>(
+    system: &MachineSystem,
+    home: &Home,
+    cold: &ColdSide,
+    water: &StoreStep,
+    row: &mut Row,
+    probe: &mut P,
+) -> f64 {
+    let Some(store) = home.hot_water.as_ref().and_then(|water| water.store) else {
+        return 0.0;
+    };
+    let reachable_c = system.machine.limits().highest_flow_at(cold.open_c) - store.coil_k;
+    let end_c = store.set_point_c.min(reachable_c);
+    let machine_kwh =
+        ((end_c - water.before_c) * store.capacity_kwh_per_k).clamp(0.0, water.wanted_kwh);
+    let mut used_hours = 0.0;
+    if machine_kwh > 0.0 {
+        let duty = Duty {
+            heat_kw: machine_kwh,
+            // The store warms along the block; its mean carries the mean COP closely (the curve is nearly straight).
+            flow_c: (water.before_c + end_c) / 2.0 + store.coil_k,
+            spread_k: store.coil_k,
+            hours: 1.0,
+            at_full_output: true,
+        };
+        let delivered = system.machine.deliver(cold, &duty);
+        probe.see(DutyKind::HotWater, cold, &duty, &delivered);
+        used_hours = delivered.running_hours;
+        row.machine_water_kwh = delivered.heat_kwh;
+        row.machine_water_electricity_kwh = charge(row, &delivered);
+        row.water_cop = cop(delivered.heat_kwh, row.machine_water_electricity_kwh);
+        if delivered.heat_kwh > 0.0 {
+            row.water_flow_c = Some(delivered.flow_c);
+        }
+    }
+    // Only what the machine can never reach is left to the immersion heater; a block that is merely long goes on.
+    let beyond_kwh = if row.machine_water_kwh > 0.0 || machine_kwh == 0.0 {
+        water.wanted_kwh - machine_kwh
+    } else {
+        water.wanted_kwh
+    };
+    row.immersion_kwh = beyond_kwh.clamp(0.0, system.immersion_kw);
+    row.flags |= Flags::IMMERSION.when(row.immersion_kwh > 0.0);
+    used_hours
+}
+
+/// Puts a duty's electricity into its components; gives their sum.
+fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
+    row.compressor_kwh += delivered.compressor_kwh;
+    row.source_side_kwh += delivered.source_side_kwh;
+    row.defrost_kwh += delivered.defrost_kwh;
+    row.allowance_kwh += delivered.allowance_kwh;
+    row.extracted_kwh += delivered.extracted_kwh;
+    row.running_hours += delivered.running_hours;
+    row.starts += delivered.starts;
+    if delivered.running_hours > 0.0 {
+        row.source_c = Some(delivered.source_c);
+    }
+    row.flags |= Flags::CYCLING.when(delivered.flags.cycling)
+        | Flags::FLOW_CAPPED.when(delivered.flags.capped_flow)
+        | Flags::MACHINE_STOPPED.when(delivered.flags.stopped)
+        | Flags::AT_GREATEST_OUTPUT.when(delivered.flags.short)
+        | Flags::FROSTING.when(delivered.flags.frosting);
+    delivered.compressor_kwh
+        + delivered.source_side_kwh
+        + delivered.defrost_kwh
+        + delivered.allowance_kwh
+}
+
+fn cop(heat_kwh: f64, electricity_kwh: f64) -> Option<f64> {
+    (heat_kwh > 0.0 && electricity_kwh > 0.0).then(|| heat_kwh / electricity_kwh)
+}
+
+/// A boiler: hot water first, then the rooms, its efficiency following the water that comes back.
+fn boiler_hour(
+    boiler: &Boiler,
+    fixed_flow_c: Option<f64>,
+    home: &Home,
+    water: &StoreStep,
+    rooms: &Rooms,
+    row: &mut Row,
+) {
+    row.heater_water_kwh = water.wanted_kwh.min(boiler.output_kw);
+    row.fuel_kwh = row.heater_water_kwh / boiler.gross_efficiency(BOILER_WATER_RETURN_C);
+    row.heater_space_kwh = rooms
+        .wanted_kwh
+        .min(boiler.output_kw - row.heater_water_kwh);
+    if row.heater_space_kwh > 0.0 {
+        let follows = home.emitters.at_load(row.heater_space_kwh, rooms.room_c);
+        // Fixed: it fires at its set flow with the emitters' design spread and lets the valves throttle.
+        let warm = fixed_flow_c.map_or(follows, |flow_c| WaterTemperatures {
+            flow_c,
+            return_c: flow_c - home.emitters.design_spread_k(),
+        });
+        row.fuel_kwh += row.heater_space_kwh / boiler.gross_efficiency(warm.return_c);
+        row.space_flow_c = Some(warm.flow_c);
+        row.space_return_c = Some(warm.return_c);
+    }
+    let heat_kwh = row.heater_water_kwh + row.heater_space_kwh;
+    row.heater_electricity_kwh = heat_kwh * boiler.electricity_per_heat;
+    row.fuel_loss_kwh = row.fuel_kwh - heat_kwh;
+}

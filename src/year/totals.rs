@@ -1,0 +1,58 @@
+//! A sink that keeps sums by month and the extremes.
+
+use super::Sink;
+use super::row::{Flags, Row, Sums};
+
+/// Sums of a stretch of hours by civil month, with the extremes.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Totals<'a> {
+    month0: &'a [u8],
+    /// Sums of each civil month.
+    pub months: [Sums; 12],
+    /// Hours taken.
+    pub hours: u32,
+    /// Lowest indoor temperature, °C.
+    pub min_indoor_c: f64,
+    /// Greatest hourly mean of electric power, kW.
+    pub peak_electric_kw: f64,
+    /// Hours in which backup or immersion heater ran.
+    pub hours_backup: u32,
+    /// Hours that ended short of heat.
+    pub hours_short: u32,
+}
+
+impl<'a> Totals<'a> {
+    /// Nothing yet; the column gives the civil month from 0 of every hour of the axis.
+    pub fn new(month0: &'a [u8]) -> Self {
+        Self {
+            month0,
+            months: [Sums::default(); 12],
+            hours: 0,
+            min_indoor_c: f64::INFINITY,
+            peak_electric_kw: 0.0,
+            hours_backup: 0,
+            hours_short: 0,
+        }
+    }
+
+    /// Sums of all months.
+    pub fn all(&self) -> Sums {
+        let mut all = Sums::default();
+        for month in &self.months {
+            all.add_scaled(month, 1.0);
+        }
+        all
+    }
+}
+
+impl Sink for Totals<'_> {
+    fn take(&mut self, hour: usize, row: &Row) {
+        self.months[usize::from(self.month0[hour])].add(row);
+        self.hours += 1;
+        self.min_indoor_c = self.min_indoor_c.min(row.indoor_c);
+        self.peak_electric_kw = self.peak_electric_kw.max(row.electricity_kwh());
+        let backed = row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION);
+        self.hours_backup += u32::from(backed);
+        self.hours_short += u32::from(row.flags.has(Flags::SHORT));
+    }
+}
