@@ -52,6 +52,14 @@ pub(super) fn machine(
         );
         return None;
     }
+    if let (Some(_), Some(leaf)) = (&table.machine, &table.rated_output) {
+        check.refuse(
+            &leaf.span(),
+            "rated_output beside machine",
+            "the size that the machine sheet tells",
+            "remove it; only a typical machine can be scaled",
+        );
+    }
     let sheet = if table.machine.is_some() {
         let path = check.value(&table.machine)?;
         let text = check.take(folder.text(&path))?;
@@ -65,7 +73,7 @@ pub(super) fn machine(
     source_agrees(table, kind, &sheet, check)?;
     let fitted = check.take(fit(&sheet))?;
     let scaled = match rated_output {
-        Some(output) if table.rated_cop.is_none() => fitted.heat_pump.scaled_to(output.kw()),
+        Some(output) if table.typical_machine.is_some() => fitted.heat_pump.scaled_to(output.kw()),
         _ => fitted.heat_pump.clone(),
     };
     let machine = scaled.with_field_factor(factor?.fraction());

@@ -30,6 +30,9 @@ pub struct Args {
     /// How to print the result.
     #[arg(long, value_enum, default_value_t)]
     format: Format,
+    /// Say where each assumption is from.
+    #[arg(long)]
+    assumptions: bool,
     /// Print every default with its source, and stop.
     #[arg(long)]
     show_defaults: bool,
@@ -82,7 +85,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     warn(&estimate.findings);
     match args.format {
         Format::Json => print_json(&estimate),
-        Format::Text => print(&estimate_text(&estimate)),
+        Format::Text => print(&estimate_text(&estimate, args.assumptions)),
     }
 }
 
@@ -97,7 +100,7 @@ fn pictures(estimate: &Estimate, folder: &std::path::Path) -> Result<Vec<NewFile
                 today: system.today,
                 energy: system.cost_energy,
                 standing: system.cost_standing,
-                tax: system.cost_tax,
+                tax: system.cost_tax.unwrap_or(0.0),
             })
             .collect(),
     };

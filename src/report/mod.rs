@@ -1,7 +1,9 @@
 //! Answers as text and files.
 
 mod ledger;
+mod table;
 mod text;
 
 pub use ledger::{ledger_csv, ledger_legend};
+pub use table::{plain_table, plain_table_within};
 pub use text::estimate_text;
