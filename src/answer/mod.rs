@@ -3,6 +3,8 @@
 mod compose;
 pub mod cycle;
 mod estimate;
+pub mod machine;
+pub mod rating;
 pub mod tariff;
 
 pub use compose::{Told, compose};

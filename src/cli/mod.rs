@@ -8,7 +8,9 @@ mod cycle;
 mod estimate;
 mod failure;
 mod files;
+mod machine;
 mod output;
+mod rating;
 mod tariff;
 
 use std::process::ExitCode;
@@ -36,6 +38,8 @@ struct Arguments {
 enum Command {
     Estimate(estimate::Args),
     Cycle(cycle::Args),
+    Machine(machine::Args),
+    Rating(rating::Args),
     Tariff(tariff::Args),
 }
 
@@ -52,6 +56,8 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
         Command::Cycle(args) => cycle::run(args),
+        Command::Machine(args) => machine::run(args),
+        Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
     }
 }

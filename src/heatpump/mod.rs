@@ -36,7 +36,7 @@ pub use heat_pump::{HeatPump, USUAL_FIELD_FACTOR};
 pub use idle::IdlePower;
 pub use limits::{LEAST_DIFFERENCE_K, LOWEST_FLOW_C, Limits};
 pub use machine::{Machine, Operation, SolveError};
-pub use map::{Input, Map, Range};
+pub use map::{Input, Map, MapError, Range};
 pub use part_load::{running_rise_k, running_spread_k, start_up_loss_kw, starts_per_hour};
 pub use priors::Prior;
 pub use sheet::{
