@@ -11,6 +11,7 @@ use crate::bounds;
 use crate::document::{Check, Leaf, Section};
 use crate::heatpump::{HeatPump, Sheet, SourceKind, fit};
 use crate::problem::{Finding, Problem, Problems, Severity};
+use crate::refrigerant::Refrigerant;
 use crate::units::{Power, Temperature, parse};
 
 /// A fitted machine and what there is to tell about it.
@@ -145,6 +146,18 @@ fn one_point(
         check.missing(&span, "rated_output", "\"6 kW\"");
     }
     let refrigerant = check.required(&table.refrigerant, &span, "refrigerant", "\"R290\"");
+    let refrigerant = refrigerant.filter(|name| {
+        let held = name.parse::<Refrigerant>();
+        if let Err(unknown) = &held {
+            check.refuse(
+                &span_of(&table.refrigerant),
+                unknown.to_string(),
+                Refrigerant::names(),
+                "",
+            );
+        }
+        held.is_ok()
+    });
     let cop = check.plain_within(&table.rated_cop, &bounds::COP);
     let default = match kind {
         SystemKind::GroundSource => defaults::RATED_AT_GROUND,
