@@ -45,10 +45,11 @@ pub(super) fn read_sheet(file: &str, raw: &RawSheet, check: &mut Check) -> Optio
     let head = match &raw.machine {
         Some(machine) => read_machine(machine, check, &mut assumed),
         None => {
-            check.missing(
+            check.refuse(
                 &(0..0),
-                "machine",
-                "a table [machine] with label, source, refrigerant and speed",
+                "there is no table [machine]",
+                "[machine] with label, source, refrigerant and speed",
+                "write it at the top of the sheet",
             );
             None
         }
@@ -60,10 +61,11 @@ pub(super) fn read_sheet(file: &str, raw: &RawSheet, check: &mut Check) -> Optio
         .map(|tested| (tested, read_point(tested, kind, check)))
         .collect();
     if points.is_empty() {
-        check.missing(
+        check.refuse(
             &(0..0),
-            "tested",
-            "a table [[tested]] with source, flow, output and cop",
+            "there is no table [[tested]]",
+            "at least one [[tested]] with source, flow, output and cop or input",
+            "copy the points of the datasheet, one table each",
         );
     }
     let limits = read_limits(raw.limits.as_ref(), kind, check);
@@ -263,15 +265,15 @@ fn read_limits(
     let flows: Vec<_> = raw
         .highest_flow
         .iter()
-        .map(|entry| (entry, read_highest_flow(entry, bound, check)))
+        .map(|entry| read_highest_flow(entry, bound, check))
         .collect();
-    for pair in flows.windows(2) {
-        if let [(_, Some(first)), (entry, Some(second))] = pair
-            && second.0 <= first.0
+    for (pair, entry) in flows.windows(2).zip(raw.highest_flow.iter().skip(1)) {
+        if let [(Some(first), _), (Some(second), _)] = pair
+            && second <= first
         {
             check.refuse(
                 &entry.span(),
-                format!("source {} °C after {} °C", second.0, first.0),
+                format!("source {second} °C after {first} °C"),
                 "source temperatures that rise from entry to entry",
                 "sort the entries of highest_flow by source",
             );
@@ -287,7 +289,10 @@ fn read_limits(
             "are the two swapped?",
         );
     }
-    let highest_flow_c: Option<Vec<_>> = flows.into_iter().map(|(_, pair)| pair).collect();
+    let highest_flow_c: Option<Vec<_>> = flows
+        .into_iter()
+        .map(|(source, flow)| source.zip(flow))
+        .collect();
     Some(Limits {
         lowest_source_c: low?.c(),
         highest_source_c: high?.c(),
@@ -300,7 +305,7 @@ fn read_highest_flow(
     raw: &Section<RawHighestFlow>,
     bound: &Bound,
     check: &mut Check,
-) -> Option<(f64, f64)> {
+) -> (Option<f64>, Option<f64>) {
     let span = raw.span();
     if raw.source.is_none() {
         check.missing(&span, "limits.highest_flow.source", "\"-20 °C\"");
@@ -310,7 +315,7 @@ fn read_highest_flow(
     }
     let source = check.within(&raw.source, bound);
     let flow = check.within(&raw.flow, &TESTED_FLOW_C);
-    Some((source?.c(), flow?.c()))
+    (source.map(|t| t.c()), flow.map(|t| t.c()))
 }
 
 /// The stated idle powers, in the order of [`IdlePower`]'s fields.

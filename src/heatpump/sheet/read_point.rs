@@ -3,7 +3,8 @@
 use super::raw::RawTested;
 use super::{SourceKind, SpeedAt, TestedPoint, carnot, default_spread_k};
 use crate::bounds::{self, Bound};
-use crate::document::{Check, Section};
+use crate::document::{Check, Leaf, Section};
+use crate::units::Power;
 
 /// Entering brine or ground water.
 const GROUND_SOURCE_C: Bound = Bound {
@@ -63,7 +64,7 @@ pub(super) fn read_point(
     }
     let source = check.within(&raw.source, source_bound(kind));
     let flow = check.within(&raw.flow, &TESTED_FLOW_C);
-    let heat = check.within(&raw.output, &bounds::OUTPUT_KW);
+    let heat = read_output(&raw.output, check);
     let input = check.value(&raw.input);
     let cop = check.plain_within(&raw.cop, &TESTED_COP);
     let at = check.value(&raw.at).map_or(SpeedAt::Unknown, |at| at.0);
@@ -139,4 +140,23 @@ pub(super) fn read_point(
         // Only an outdoor coil frosts.
         defrost_included: defrost_included && kind == SourceKind::Air,
     })
+}
+
+/// The output within its bound, with an eye for kW and W.
+fn read_output(leaf: &Option<Leaf<Power>>, check: &mut Check) -> Option<Power> {
+    let output = check.value(leaf)?;
+    let (kw, bound) = (output.kw(), &bounds::OUTPUT_KW);
+    if bound.holds(kw) {
+        return Some(output);
+    }
+    let remedy = [kw * 1000.0, kw / 1000.0]
+        .into_iter()
+        .find(|other| bound.holds(*other))
+        .map_or_else(
+            || "check the number and its unit".to_owned(),
+            |other| format!("are kW and W swapped? {other} kW would be allowed"),
+        );
+    let span = leaf.as_ref().map(Leaf::span).unwrap_or_default();
+    check.refuse(&span, format!("output {kw} kW"), bound.words(), remedy);
+    None
 }
