@@ -21,7 +21,7 @@ pub mod home;
 pub mod source;
 pub mod tariff;
 // rank 3: the hours
-// pub mod year;
+pub mod year;
 // rank 4: what the hours add up to
 pub mod bill;
 pub mod plan;

@@ -3,6 +3,7 @@
 //! Every line is a quantity, a rate and an amount, rounded once, half up. Months are shares of the lines, so twelve
 //! months add up to the year to the cent.
 
+mod entries;
 mod lines;
 mod month;
 
@@ -13,7 +14,7 @@ use rust_decimal::Decimal;
 use serde::Serialize;
 
 use crate::calendar::CivilHour;
-use crate::problem::Problems;
+use crate::problem::{Place, Problem, Problems};
 use crate::tariff::{Flows, Meter, Reading, Span, Tariff};
 use crate::units::Currency;
 
@@ -130,15 +131,31 @@ pub fn price(
     kwh_by_hour: &[f64],
     connection: Connection,
 ) -> Result<Bill, Problems> {
+    if kwh_by_hour.len() != civil.len() {
+        return Err(Problem::new(
+            Place::field("load"),
+            format!("{} hours", kwh_by_hour.len()),
+            format!("the {} hours that are priced", civil.len()),
+            "give a load for every hour",
+        )
+        .into());
+    }
     let meter = tariff.meter(civil)?;
     let mut reading = meter.zero();
-    for (hour, &import_kwh) in kwh_by_hour.iter().enumerate() {
+    for (hour, (&import_kwh, clock)) in kwh_by_hour.iter().zip(civil).enumerate() {
         // A negative hour would vanish in its bucket's sum.
-        let import_kwh = if import_kwh < 0.0 {
-            f64::NAN
-        } else {
-            import_kwh
-        };
+        if !import_kwh.is_finite() || import_kwh < 0.0 {
+            return Err(Problem::new(
+                Place::field("load"),
+                format!(
+                    "{import_kwh} kWh at {} {:02}:{:02}",
+                    clock.date, clock.hour, clock.minute
+                ),
+                "energy bought in an hour, from 0",
+                "what is fed back is not part of a load",
+            )
+            .into());
+        }
         let flows = Flows {
             import_kwh,
             export_kwh: 0.0,

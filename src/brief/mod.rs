@@ -4,12 +4,14 @@ mod defaults;
 mod demo;
 mod energy;
 mod files;
+mod ground;
 mod home;
 mod machine;
 mod notes;
 mod raw;
 mod read;
 mod system;
+mod weather;
 
 pub use defaults::{DEFAULTS, Default};
 pub use demo::FILES as DEMONSTRATION_FILES;

@@ -12,16 +12,29 @@ pub(super) struct Notes(Vec<Assumption>);
 
 impl Notes {
     /// Notes a value and where it is from.
-    pub fn add(&mut self, name: impl Into<String>, value: impl Into<String>, from: impl Into<String>) {
-        let note = Assumption { name: name.into(), value: value.into(), from: from.into() };
+    pub fn add(
+        &mut self,
+        name: impl Into<String>,
+        value: impl Into<String>,
+        from: impl Into<String>,
+    ) {
+        let note = Assumption {
+            name: name.into(),
+            value: value.into(),
+            from: from.into(),
+        };
         if !self.0.contains(&note) {
             self.0.push(note);
         }
     }
 
     /// Notes that a default was used.
-    pub fn default(&mut self, default: &Default) {
-        self.add(default.field, default.value, format!("default: {}", default.from));
+    pub fn used(&mut self, default: &Default) {
+        self.add(
+            default.field,
+            default.value,
+            format!("default: {}", default.from),
+        );
     }
 
     /// All of them.
@@ -40,7 +53,7 @@ impl Notes {
         if leaf.is_some() {
             return check.within(leaf, bound);
         }
-        self.default(default);
+        self.used(default);
         parse(default.value).ok()
     }
 
@@ -54,7 +67,7 @@ impl Notes {
         if leaf.is_some() {
             return check.value(leaf);
         }
-        self.default(default);
+        self.used(default);
         T::read(&toml::Value::String(default.value.to_owned())).ok()
     }
 }

@@ -3,6 +3,9 @@
 use schemars::JsonSchema;
 use serde::Deserialize;
 
+use super::ground::{
+    BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
+};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind};
@@ -106,10 +109,12 @@ impl crate::document::LeafValue for StoreVolume {
     fn read(value: &toml::Value) -> Result<Self, crate::units::UnitProblem> {
         match value.as_str() {
             Some("none") => Ok(Self::None),
-            _ => WaterVolume::read(value).map(Self::Of).map_err(|mut problem| {
-                problem.allowed.push_str(", or \"none\"");
-                problem
-            }),
+            _ => WaterVolume::read(value)
+                .map(Self::Of)
+                .map_err(|mut problem| {
+                    problem.allowed.push_str(", or \"none\"");
+                    problem
+                }),
         }
     }
 
@@ -123,6 +128,28 @@ impl crate::document::LeafValue for StoreVolume {
 pub(super) struct Weather {
     /// Hourly file, relative to the brief.
     pub file: Option<Leaf<String>>,
+    /// Clock of stamps without an offset: "UTC", "-05:00" or "Europe/London".
+    pub time_zone: Option<Leaf<String>>,
+    /// Which end of its hour a stamp marks: "beginning" or "ending".
+    pub stamps: Option<Leaf<String>>,
+    /// Order of day and month where the year comes last: "day-first" or "month-first".
+    pub date_order: Option<Leaf<String>>,
+    /// Column of the time, or of the date when there is a clock_column; by heading or number from 1.
+    pub time_column: Option<Leaf<String>>,
+    /// Column of the time of day.
+    pub clock_column: Option<Leaf<String>>,
+    /// Column of the outdoor temperature.
+    pub temperature_column: Option<Leaf<String>>,
+    /// Unit of the outdoor temperature: "°C", "°F", "K", "tenths of °C" or "tenths of °F".
+    pub temperature_unit: Option<Leaf<String>>,
+    /// Column of the relative humidity.
+    pub humidity_column: Option<Leaf<String>>,
+    /// Column of the global radiation.
+    pub radiation_column: Option<Leaf<String>>,
+    /// Lines to pass over at the beginning.
+    pub skip_lines: Option<Leaf<i64>>,
+    /// Fill gaps of more than a day from the days around them instead of refusing the file.
+    pub fill_longer_gaps: Option<Leaf<bool>>,
 }
 
 /// Tariffs and carbon.
@@ -177,6 +204,24 @@ pub(super) struct SystemTable {
     pub loop_resistance: Option<Leaf<LoopResistance>>,
     /// Ground source: thermal diffusivity of the soil.
     pub soil_diffusivity: Option<Leaf<Diffusivity>>,
+    /// Ground source: the ground about bores or trenches.
+    pub ground: Option<Section<GroundTable>>,
+    /// Ground source: what flows in bores or trenches.
+    pub brine: Option<Section<BrineTable>>,
+    /// Ground source: the pipe of bores or trenches.
+    pub pipe: Option<Section<PipeTable>>,
+    /// Ground source: what is in the bores.
+    pub borehole: Option<Section<BoreholeTable>>,
+    /// Ground source: a bore, one table each.
+    #[serde(default)]
+    pub bore: Vec<Section<BoreTable>>,
+    /// Ground source: a trench, one table each.
+    #[serde(default)]
+    pub trench: Vec<Section<TrenchTable>>,
+    /// Ground source: a well or surface water.
+    pub well: Option<Section<WellTable>>,
+    /// Ground source: year of the loop's life that is compared, from 1.
+    pub shown_year: Option<Leaf<i64>>,
 
     /// Boiler or electric heater: greatest output.
     pub output: Option<Leaf<Power>>,
@@ -216,7 +261,10 @@ pub(super) enum SystemKind {
 impl SystemKind {
     /// Its word in brief and results.
     pub fn word(self) -> &'static str {
-        Self::WORDS.iter().find(|(_, kind)| *kind == self).map_or("", |(word, _)| word)
+        Self::WORDS
+            .iter()
+            .find(|(_, kind)| *kind == self)
+            .map_or("", |(word, _)| word)
     }
 }
 

@@ -13,13 +13,14 @@ use super::home::WeatherFacts;
 use super::notes::Notes;
 use super::raw;
 use super::system::{Surroundings, contender};
+use super::weather::weather;
 use super::{defaults, demo};
 use crate::answer::Told;
 use crate::calendar::CivilHour;
 use crate::document::{Check, Document, Section, read_text};
 use crate::problem::Problems;
 use crate::study::Case;
-use crate::weather::{ReadOptions, Weather, read_bytes};
+use crate::weather::Weather;
 use crate::year::Site;
 
 /// A brief that can be run.
@@ -67,31 +68,41 @@ impl Brief {
 /// Builds what can be built and checks everything else all the same, so that no problem waits for another to be mended.
 fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> {
     let mut notes = Notes::default();
-    let start = 0..0;
     if raw.home.is_none() {
-        check.missing(&start, "home", "a table [home] with heat_loss and emitters");
+        check.missing_table("[home]", "heat_loss, and a table [home.emitters] with flow");
     }
     if raw.today.is_none() {
-        check.missing(&start, "today", "a table [today] with kind = \"gas-boiler\"");
+        check.missing_table("[today]", "label and kind = \"gas-boiler\"");
     }
     if raw.choice.is_empty() {
-        check.missing(&start, "choice", "at least one table [[choice]] with kind = \"air-source\"");
+        check.missing_table("[[choice]]", "label, kind = \"air-source\" and machine");
     }
     if raw.energy.is_none() {
-        check.missing(&start, "energy", "a table [energy] with electricity and gas tariffs");
+        check.missing_table("[energy]", "electricity and gas, the files of the tariffs");
     }
     let label = raw.home.as_ref().and_then(|home| check.value(&home.label));
     let zone = time_zone(raw.home.as_ref(), check, &mut notes);
-    let weather = weather(raw, folder, zone, check);
-    let site = weather.as_ref().zip(zone).map(|(weather, zone)| Arc::new(site(weather, zone)));
+    let weather = weather(raw.weather.as_ref(), folder, check);
+    let site = weather
+        .as_ref()
+        .zip(zone)
+        .map(|(weather, zone)| Arc::new(site(weather, zone)));
     let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
     labels_differ(raw, check);
 
     // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
-    let facts = weather.as_ref().map_or(WeatherFacts { design_c: -5.0, has_radiation: true }, facts);
+    let facts = weather.as_ref().map_or(
+        WeatherFacts {
+            design_c: -5.0,
+            has_radiation: true,
+        },
+        facts,
+    );
     let mut contenders = Vec::new();
     let mut machines = Vec::new();
-    let mut findings = weather.as_ref().map_or_else(Vec::new, |weather| weather.findings.clone());
+    let mut findings = weather
+        .as_ref()
+        .map_or_else(Vec::new, |weather| weather.findings.clone());
     if let Some(home) = &raw.home {
         let systems = raw.today.iter().map(|today| (today, true));
         for (table, today) in systems.chain(raw.choice.iter().map(|choice| (choice, false))) {
@@ -110,10 +121,21 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             }
         }
     }
-    let Energy { currency, carbon_scope, .. } = energy?;
+    let Energy {
+        currency,
+        carbon_scope,
+        ..
+    } = energy?;
     let (weather, site, zone) = (weather?, site?, zone?);
+    let mut case = Case {
+        site,
+        time_zone: zone,
+        currency,
+        contenders,
+    };
+    case.age_grounds();
     Some(Brief {
-        case: Case { site, time_zone: zone, currency, contenders },
+        case,
         told: Told {
             home_label: label,
             weather_file: weather.file,
@@ -131,7 +153,7 @@ fn time_zone(
     notes: &mut Notes,
 ) -> Option<Tz> {
     let Some(leaf) = home.and_then(|home| home.time_zone.as_ref()) else {
-        notes.default(&defaults::TIME_ZONE);
+        notes.used(&defaults::TIME_ZONE);
         return defaults::TIME_ZONE.value.parse().ok();
     };
     let name = check.value(&home?.time_zone)?;
@@ -147,22 +169,15 @@ fn time_zone(
     zone
 }
 
-fn weather(raw: &raw::Brief, folder: &Folder, zone: Option<Tz>, check: &mut Check) -> Option<Weather> {
-    let _ = zone;
-    let Some(table) = &raw.weather else {
-        check.missing(&(0..0), "weather", "a table [weather] with file = \"….csv\"");
-        return None;
-    };
-    let path = check.required(&table.file, &table.span(), "weather.file", "\"../weather_samples/….csv\"")?;
-    let bytes = check.take(folder.bytes(&path))?;
-    check.take(read_bytes(&folder.name(&path), &bytes, &ReadOptions::default()))
-}
-
 fn site(weather: &Weather, zone: Tz) -> Site {
     let civil = weather.axis.civil(zone);
     Site {
         axis: weather.axis,
-        month0: civil.iter().map(CivilHour::month0).map(|month0| u8::try_from(month0).unwrap_or(0)).collect(),
+        month0: civil
+            .iter()
+            .map(CivilHour::month0)
+            .map(|month0| u8::try_from(month0).unwrap_or(0))
+            .collect(),
         civil,
         years: weather.years(),
         outdoor_c: weather.outdoor_c.clone(),

@@ -4,9 +4,12 @@ use super::bars::draw_name;
 use super::cloud;
 use super::font::Weight;
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{BROWN, Dash, INK};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, font, named};
 
 const PICTURE: &str = "COP through the year";
@@ -168,7 +171,12 @@ fn alt(data: &CopYear, marks: &Marks) -> String {
                     marks.number(warm.0, 1)
                 );
             }
-            _ => out += &format!("{} hours, too few for medians", system.hours.len()),
+            _ => {
+                out += &format!(
+                    "{}, too few for medians",
+                    marks.count(system.hours.len(), "hour")
+                )
+            }
         }
         let year = year_text(system, marks);
         out += &if year.is_empty() {

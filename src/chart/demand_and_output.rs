@@ -1,10 +1,13 @@
 //! Heat demand of every hour against outdoor temperature, with what the machine can give and the balance point.
 
 use super::frame::{Axis, Frame, around};
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{BROWN, Dash, INK, OCHRE};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
-use super::{ChartError, Picture, cloud, finite, font::Weight, named, named_short};
+use super::scene::{MARGIN, Scene, WIDTH};
+use super::{ChartError, Picture, cloud, finite, font::Weight, named, sentence};
 
 const PICTURE: &str = "demand and output";
 
@@ -52,8 +55,8 @@ pub fn demand_and_output(data: &DemandAndOutput, marks: &Marks) -> Result<Pictur
     let title = "Heat demand and what the machine can give";
     let above = data.hours.iter().filter(|h| short(data, h.0, h.1)).count();
     let subtitle = format!(
-        "{}. Each cell counts hours of the year.",
-        named_short(&data.system)
+        "{} Each cell counts hours of the year.",
+        sentence(&data.system, 320.0)
     );
     let mut scene = Scene::new(f64::MAX);
     let top = scene.heading(title, &subtitle);
@@ -73,6 +76,7 @@ pub fn demand_and_output(data: &DemandAndOutput, marks: &Marks) -> Result<Pictur
         let x = frame.at_x(balance);
         let y = frame.area.top + 18.0;
         scene.place(
+            &frame.area,
             &text,
             &[((x + 7.0, y), Anchor::Start), ((x - 7.0, y), Anchor::End)],
             strong,
@@ -103,7 +107,13 @@ pub fn demand_and_output(data: &DemandAndOutput, marks: &Marks) -> Result<Pictur
             ((x, y + 28.0), Anchor::Middle),
         ];
         places.extend(around(x, y, 12.0));
-        scene.place(&text, &places, Type::new(SMALL, Weight::Regular, INK));
+        scene.place_for(
+            &frame.area,
+            (x, y),
+            &text,
+            &places,
+            Type::new(SMALL, Weight::Regular, INK),
+        );
     }
     Ok(Picture::new(title, alt(data, above, marks), scene))
 }
@@ -169,8 +179,8 @@ fn alt(data: &DemandAndOutput, above: usize, marks: &Marks) -> String {
     let peak = data.hours.iter().map(|h| h.1).fold(0.0, f64::max);
     let coldest = data.hours.iter().map(|h| h.0).fold(f64::INFINITY, f64::min);
     let mut out = format!(
-        "Heat demand of {} hours against outdoor temperature for {}. Demand rises to {} kW; the coldest hour is {} °C.",
-        marks.number(data.hours.len() as f64, 0),
+        "Heat demand of {} against outdoor temperature for {}. Demand rises to {} kW; the coldest hour is {} °C.",
+        marks.count(data.hours.len(), "hour"),
         named(&data.system),
         marks.number(peak, 1),
         marks.number(coldest, 1)
@@ -182,8 +192,8 @@ fn alt(data: &DemandAndOutput, above: usize, marks: &Marks) -> String {
     if !data.greatest_output.is_empty() {
         let share = above as f64 / data.hours.len() as f64 * 100.0;
         out += &format!(
-            " In {} hours, {} % of all, demand is above the machine’s greatest output.",
-            marks.number(above as f64, 0),
+            " In {}, {} % of all, demand is above the machine’s greatest output.",
+            marks.count(above, "hour"),
             marks.number(share, 1)
         );
     }

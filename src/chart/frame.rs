@@ -1,9 +1,10 @@
 //! The plot area of a picture: two axes with ticks, titles with units, a light grid, and the way from values to points.
 
-use super::geometry::{self, Point};
+use super::geometry::{self, Point, Rect};
+use super::label::{Anchor, Type};
 use super::numbers::{self, Marks};
 use super::palette::{AXIS, Colour, Dash, GRID, INK};
-use super::scene::{Anchor, Rect, Scene, Type};
+use super::scene::Scene;
 
 /// One axis: its ends, its ticks with what is written at them, and its title with the unit.
 #[derive(Debug, Clone)]
@@ -93,6 +94,8 @@ impl Axis {
 #[derive(Debug, Clone)]
 pub(crate) struct Frame {
     pub area: Rect,
+    /// Where the title of the y axis begins.
+    pub title_left: f64,
     pub x: Axis,
     pub y: Axis,
 }
@@ -112,6 +115,7 @@ impl Frame {
             .map(|(_, t)| set.width(t))
             .fold(0.0, f64::max);
         Self {
+            title_left: outer.left,
             area: Rect {
                 left: outer.left + widest + 8.0,
                 top: outer.top + ABOVE,
@@ -152,17 +156,18 @@ impl Frame {
             scene.line(&[(area.left, y), (area.right, y)], colour, width);
             scene.tick(text, (area.left - 6.0, y + 4.6), Anchor::End);
         }
-        let title_left = (area.left
-            - 6.0
-            - self
-                .y
-                .ticks
-                .iter()
-                .map(|(_, t)| set.width(t))
-                .fold(0.0, f64::max))
-        .max(2.0);
-        let title = super::font::fit(&self.y.title, set.size, set.weight, area.right - title_left);
-        scene.text(&title, (title_left, area.top - 11.0), Anchor::Start, set);
+        let title = super::font::fit(
+            &self.y.title,
+            set.size,
+            set.weight,
+            area.right - self.title_left,
+        );
+        scene.text(
+            &title,
+            (self.title_left, area.top - 11.0),
+            Anchor::Start,
+            set,
+        );
     }
 
     /// The x axis: upright grid lines, tick labels as far as they fit, title at the right below.
@@ -253,10 +258,10 @@ impl Frame {
     }
 
     /// Writes `text` near the point of a pair of values, wherever there is room next to it; not at all otherwise.
-    pub(crate) fn note(&self, scene: &mut Scene, text: &str, x: f64, y: f64) -> bool {
+    pub(crate) fn note(&self, scene: &mut Scene, text: &str, x: f64, y: f64) {
         let (px, py) = self.at(x, y);
-        let set = Type::new(super::scene::SMALL, super::font::Weight::Regular, INK);
-        scene.place(text, &around(px, py, 9.0), set)
+        let set = Type::new(super::label::SMALL, super::font::Weight::Regular, INK);
+        scene.place_for(&self.area, (px, py), text, &around(px, py, 9.0), set);
     }
 }
 

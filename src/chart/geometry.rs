@@ -1,10 +1,62 @@
 //! Plane geometry of the pictures: dashes along a line, hatch lines inside a polygon, lines cut at a rectangle.
 
 use super::palette::Hatch;
-use super::scene::Rect;
 
 /// A point on the canvas in points, y downwards.
 pub(crate) type Point = (f64, f64);
+
+/// A rectangle on the canvas, y downwards.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Rect {
+    /// Left edge.
+    pub left: f64,
+    /// Upper edge.
+    pub top: f64,
+    /// Right edge.
+    pub right: f64,
+    /// Lower edge.
+    pub bottom: f64,
+}
+
+impl Rect {
+    /// Whether two rectangles share more than an edge.
+    pub fn overlaps(&self, other: &Rect) -> bool {
+        self.left < other.right
+            && other.left < self.right
+            && self.top < other.bottom
+            && other.top < self.bottom
+    }
+
+    /// Whether `other` lies wholly inside.
+    pub fn contains(&self, other: &Rect) -> bool {
+        self.left <= other.left
+            && self.top <= other.top
+            && self.right >= other.right
+            && self.bottom >= other.bottom
+    }
+
+    pub(crate) fn contains_point(&self, p: Point) -> bool {
+        (self.left..=self.right).contains(&p.0) && (self.top..=self.bottom).contains(&p.1)
+    }
+
+    pub(crate) fn grown(&self, by: f64) -> Rect {
+        Rect {
+            left: self.left - by,
+            top: self.top - by,
+            right: self.right + by,
+            bottom: self.bottom + by,
+        }
+    }
+
+    pub(crate) fn corners(&self) -> [Point; 4] {
+        [
+            (self.left, self.top),
+            (self.right, self.top),
+            (self.right, self.bottom),
+            (self.left, self.bottom),
+        ]
+    }
+}
 
 /// Distance between hatch lines in points.
 const HATCH_STEP: f64 = 6.0;
@@ -178,6 +230,24 @@ pub(crate) fn clip_area(polygon: &[Point], area: &Rect) -> Vec<Point> {
     shape
 }
 
+/// Area of a polygon (Gauss's formula).
+pub(crate) fn size(polygon: &[Point]) -> f64 {
+    let twice: f64 = (0..polygon.len())
+        .map(|i| {
+            let (a, b) = (polygon[i], polygon[(i + 1) % polygon.len()]);
+            a.0 * b.1 - b.0 * a.1
+        })
+        .sum();
+    twice.abs() / 2.0
+}
+
+/// Length of a line.
+pub(crate) fn length(line: &[Point]) -> f64 {
+    line.windows(2)
+        .map(|p| (p[1].0 - p[0].0).hypot(p[1].1 - p[0].1))
+        .sum()
+}
+
 /// A line thinned to what can be seen: points closer than `step` sideways to the last kept one are merged into the
 /// lowest and highest of their column, so peaks stay.
 pub(crate) fn thin(points: &[Point], step: f64) -> Vec<Point> {
@@ -212,12 +282,6 @@ fn flush(column: &mut Vec<Point>, out: &mut Vec<Point>) {
 mod tests {
     use super::*;
 
-    fn length(line: &[Point]) -> f64 {
-        line.windows(2)
-            .map(|p| (p[1].0 - p[0].0).hypot(p[1].1 - p[0].1))
-            .sum()
-    }
-
     const UNIT: Rect = Rect {
         left: 0.0,
         top: 0.0,
@@ -245,13 +309,7 @@ mod tests {
             (90.0, 60.0),
             (10.0, 140.0),
         ];
-        let area: f64 = (0..shape.len())
-            .map(|i| {
-                let (a, b) = (shape[i], shape[(i + 1) % shape.len()]);
-                (a.0 * b.1 - b.0 * a.1) / 2.0
-            })
-            .sum::<f64>()
-            .abs();
+        let area = size(&shape);
         for pattern in [Hatch::Rising, Hatch::Falling, Hatch::Level, Hatch::Upright] {
             let drawn: f64 = hatch(&shape, pattern).iter().map(|l| length(l)).sum();
             // Strips at corners are cut: a few per cent at this size.
@@ -260,6 +318,13 @@ mod tests {
                 "{pattern:?}"
             );
         }
+    }
+
+    #[test]
+    fn size_and_length_of_a_right_triangle() {
+        let triangle = [(0.0, 0.0), (30.0, 0.0), (0.0, 40.0)];
+        assert_eq!(size(&triangle), 600.0);
+        assert_eq!(length(&triangle), 80.0);
     }
 
     #[test]
@@ -313,5 +378,20 @@ mod tests {
         assert_eq!(thin.first(), line.first());
         assert_eq!(thin.last(), line.last());
         assert!(thin.contains(&line[4321]));
+    }
+
+    #[test]
+    fn rectangles_that_share_an_edge_do_not_overlap() {
+        let a = Rect {
+            left: 0.0,
+            top: 0.0,
+            right: 10.0,
+            bottom: 10.0,
+        };
+        let b = Rect {
+            left: 10.0,
+            ..a.grown(5.0)
+        };
+        assert!(!a.overlaps(&b) && a.overlaps(&a.grown(-2.0)));
     }
 }

@@ -1,11 +1,13 @@
 //! Heat load in order of size: how many hours the machine carries alone, and what backup adds at the top.
 
 use super::frame::{Axis, Frame};
-use super::geometry::Point;
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::layers::{self, Layer};
 use super::numbers::{self, Marks};
 use super::palette::{CORAL, Colour, Dash, Hatch, INK, OCHRE, TEAL};
-use super::scene::{MARGIN, Rect, Scene, Swatch, WIDTH};
-use super::{ChartError, Picture, finite, named, named_short};
+use super::scene::{MARGIN, Scene, WIDTH};
+use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "load duration";
 
@@ -45,8 +47,8 @@ pub fn load_duration(data: &LoadDuration, marks: &Marks) -> Result<Picture, Char
     let hours = loads.len();
     let title = "Heat load in order of size";
     let subtitle = format!(
-        "{}. Hour by hour, the largest load first.",
-        named_short(&data.system)
+        "{} Hour by hour, the largest load first.",
+        sentence(&data.system, 320.0)
     );
     let mut scene = Scene::new(f64::MAX);
     let below = scene.heading(title, &subtitle);
@@ -158,33 +160,23 @@ fn energy(loads: &[[f64; 3]]) -> [f64; 3] {
 fn draw_panel(scene: &mut Scene, frame: &Frame, loads: &[[f64; 3]]) {
     frame.draw(scene);
     let columns = columns(frame, loads);
-    let mut base: Vec<Point> = columns.iter().map(|c| frame.at(c.0, 0.0)).collect();
-    let mut level: Vec<f64> = vec![0.0; columns.len()];
-    for (i, (_, colour, hatch)) in LAYERS.iter().enumerate() {
-        if columns.iter().all(|c| c.1[i] <= 0.0) {
-            continue;
-        }
-        for (sum, column) in level.iter_mut().zip(&columns) {
-            *sum += column.1[i];
-        }
-        let upper: Vec<Point> = columns
+    let upper = |layer: usize| -> Vec<(f64, f64)> {
+        columns
             .iter()
-            .zip(&level)
-            .map(|(c, kw)| frame.at(c.0, *kw))
-            .collect();
-        let shape: Vec<Point> = upper
-            .iter()
-            .copied()
-            .chain(base.iter().rev().copied())
-            .collect();
-        scene.hatched(&shape, *colour, *hatch);
-        base = upper;
-    }
-    let line: Vec<(f64, f64)> = columns
+            .map(|(hour, parts)| (*hour, parts[..=layer].iter().sum()))
+            .collect()
+    };
+    let stack: Vec<Layer> = LAYERS
         .iter()
-        .zip(&level)
-        .map(|(c, kw)| (c.0, *kw))
+        .enumerate()
+        .map(|(i, (_, colour, hatch))| Layer {
+            upper: upper(i),
+            colour: *colour,
+            hatch: *hatch,
+        })
         .collect();
+    layers::draw(scene, frame, &stack);
+    let line = upper(LAYERS.len() - 1);
     frame.line(scene, &line, INK, 1.6, Dash::Solid);
 }
 
@@ -218,12 +210,12 @@ fn alt(
     let peak = loads.first().map_or(0.0, |l| l.iter().sum());
     let parts: Vec<String> = shown.iter().map(|&i| texts[i].clone()).collect();
     format!(
-        "Heat load of {} hours for {}, sorted from the largest, {} kW. Heat by source: {}. Backup runs in {} hours.",
-        marks.number(loads.len() as f64, 0),
+        "Heat load of {} for {}, sorted from the largest, {} kW. Heat by source: {}. Backup runs in {}.",
+        marks.count(loads.len(), "hour"),
         named(&data.system),
         marks.number(peak, 1),
         numbers::list(&parts),
-        marks.number(loads.iter().filter(|l| l[1] > 0.0).count() as f64, 0)
+        marks.count(loads.iter().filter(|l| l[1] > 0.0).count(), "hour")
     )
 }
 
@@ -280,7 +272,7 @@ mod tests {
             "{texts:?}"
         );
         assert!(!texts.iter().any(|t| t.starts_with("not met")));
-        assert!(picture.alt.contains("Backup runs in 1 hours"));
+        assert!(picture.alt.contains("Backup runs in 1 hour."));
     }
 
     #[test]

@@ -78,7 +78,7 @@ pub enum Dash {
     /// Dots.
     Dotted,
     /// A dash and a dot in turn.
-    DashDot,
+    Alternating,
 }
 
 impl Dash {
@@ -89,7 +89,7 @@ impl Dash {
             Dash::Long => &[12.0, 5.0],
             Dash::Short => &[6.0, 4.0],
             Dash::Dotted => &[2.0, 4.0],
-            Dash::DashDot => &[10.0, 4.0, 2.0, 4.0],
+            Dash::Alternating => &[10.0, 4.0, 2.0, 4.0],
         }
     }
 }
@@ -137,7 +137,7 @@ pub fn series(index: usize) -> Series {
         look(NAVY, Hatch::Plain, Dash::Solid, Mark::Circle),
         look(CORAL, Hatch::Rising, Dash::Long, Mark::Square),
         look(TEAL, Hatch::Falling, Dash::Short, Mark::Triangle),
-        look(AZURE, Hatch::Level, Dash::DashDot, Mark::Diamond),
+        look(AZURE, Hatch::Level, Dash::Alternating, Mark::Diamond),
         look(BROWN, Hatch::Crossed, Dash::Dotted, Mark::Ring),
         look(MINT, Hatch::Upright, Dash::Solid, Mark::Frame),
         look(OCHRE, Hatch::Rising, Dash::Long, Mark::Delta),
@@ -173,31 +173,29 @@ fn linear(colour: Colour) -> [f64; 3] {
     })
 }
 
+/// Simulated colour sight, for the tests of colours.
 #[cfg(test)]
-mod tests {
-    use super::*;
+pub(crate) mod sight {
+    use super::{Colour, linear};
 
-    type Matrix = [[f64; 3]; 3];
+    pub(crate) type Matrix = [[f64; 3]; 3];
 
     /// Machado, Oliveira and Fernandes 2009, "A physiologically-based model for simulation of color vision
     /// deficiency", severity 1.0 (doi 10.1109/TVCG.2009.113); equal to PyPI colorspacious 1.1.2.
-    const PROTANOPIA: Matrix = [
+    pub(crate) const PROTANOPIA: Matrix = [
         [0.152286, 1.052583, -0.204868],
         [0.114503, 0.786281, 0.099216],
         [-0.003882, -0.048116, 1.051998],
     ];
-    const DEUTERANOPIA: Matrix = [
+    pub(crate) const DEUTERANOPIA: Matrix = [
         [0.367322, 0.860646, -0.227968],
         [0.280085, 0.672501, 0.047413],
         [-0.011820, 0.042940, 0.968881],
     ];
-    const NORMAL: Matrix = [[1.0, 0.0, 0.0], [0.0, 1.0, 0.0], [0.0, 0.0, 1.0]];
-
-    const SERIES_COLOURS: [Colour; SERIES] =
-        [NAVY, BROWN, TEAL, OCHRE, AZURE, CORAL, PERIWINKLE, MINT];
+    pub(crate) const NORMAL: Matrix = [[1.0, 0.0, 0.0], [0.0, 1.0, 0.0], [0.0, 0.0, 1.0]];
 
     /// CIELAB under D65 (CIE 15; sRGB primaries of IEC 61966-2-1) of a colour seen through `sight`.
-    fn lab(colour: Colour, sight: &Matrix) -> [f64; 3] {
+    pub(crate) fn lab(colour: Colour, sight: &Matrix) -> [f64; 3] {
         let rgb = linear(colour);
         let seen =
             sight.map(|row| (row[0] * rgb[0] + row[1] * rgb[1] + row[2] * rgb[2]).clamp(0.0, 1.0));
@@ -214,6 +212,15 @@ mod tests {
         let z = f(dot([0.0193339, 0.1191920, 0.9503041]) / 1.08883);
         [116.0 * y - 16.0, 500.0 * (x - y), 200.0 * (y - z)]
     }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::sight::{DEUTERANOPIA, Matrix, NORMAL, PROTANOPIA, lab};
+    use super::*;
+
+    const SERIES_COLOURS: [Colour; SERIES] =
+        [NAVY, BROWN, TEAL, OCHRE, AZURE, CORAL, PERIWINKLE, MINT];
 
     fn distance(a: Colour, b: Colour, sight: &Matrix) -> f64 {
         let (a, b) = (lab(a, sight), lab(b, sight));

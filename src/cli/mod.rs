@@ -5,9 +5,14 @@
 //! done, 1 the input is wrong, 2 usage, 3 cannot write.
 
 mod cycle;
+mod estimate;
+mod explain;
 mod failure;
 mod files;
+mod machine;
 mod output;
+mod rating;
+mod tariff;
 
 use std::process::ExitCode;
 
@@ -32,7 +37,12 @@ struct Arguments {
 
 #[derive(Debug, Subcommand)]
 enum Command {
+    Estimate(estimate::Args),
+    Explain(explain::Args),
     Cycle(cycle::Args),
+    Machine(machine::Args),
+    Rating(rating::Args),
+    Tariff(tariff::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -46,6 +56,11 @@ pub fn run() -> ExitCode {
 
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
+        Command::Estimate(args) => estimate::run(args),
+        Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
+        Command::Machine(args) => machine::run(args),
+        Command::Rating(args) => rating::run(args),
+        Command::Tariff(args) => tariff::run(args),
     }
 }

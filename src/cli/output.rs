@@ -40,7 +40,7 @@ pub fn print(text: &str) -> Result<(), Failure> {
 /// Prints a value as JSON, indented.
 ///
 /// # Errors
-/// As [`print`].
+/// As [`fn@print`].
 pub fn print_json<T: Serialize>(value: &T) -> Result<(), Failure> {
     let text = serde_json::to_string_pretty(value).map_err(|error| Failure::Write {
         path: "standard output".into(),

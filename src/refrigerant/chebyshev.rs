@@ -67,16 +67,27 @@ impl Curve {
         negligible: f64,
         function: impl FnMut(f64) -> Result<f64, Error>,
     ) -> Result<Curve, Error> {
-        let span = Span { low, high };
-        let values: Vec<f64> = (0..count)
-            .map(|index| span.outward(node(index, count)))
+        let values: Vec<f64> = Curve::nodes((low, high), count)
             .map(function)
             .collect::<Result<_, _>>()?;
-        let mut coefficients = coefficients(&values);
+        Ok(Curve::through((low, high), &values, negligible))
+    }
+
+    /// The nodes between `low` and `high`, the highest first.
+    pub fn nodes((low, high): (f64, f64), count: usize) -> impl Iterator<Item = f64> {
+        (0..count).map(move |index| Span { low, high }.outward(node(index, count)))
+    }
+
+    /// The interpolant through values at the nodes; see [`Curve::fit`].
+    pub fn through((low, high): (f64, f64), values: &[f64], negligible: f64) -> Curve {
+        let mut coefficients = coefficients(values);
         while coefficients.len() > 1 && coefficients.last().is_some_and(|c| c.abs() < negligible) {
             coefficients.pop();
         }
-        Ok(Curve { span, coefficients })
+        Curve {
+            span: Span { low, high },
+            coefficients,
+        }
     }
 
     /// The value at `at`, NaN outside the interval (Clenshaw's recurrence).

@@ -2,6 +2,7 @@
 //!
 //! Every other state is found on its isobar, see `isobar.rs`.
 
+use super::dome::Dome;
 use super::helmholtz::{Helmholtz, Phase};
 use super::solve::increasing_root;
 use super::{PropertyError, Refrigerant, Saturation, StatePoint};
@@ -29,6 +30,9 @@ const CRITICAL_MARGIN_K: f64 = 0.5;
 
 /// The dome of a diagram reaches up to this far below the critical temperature, K.
 const DOME_MARGIN_K: f64 = 0.1;
+/// Saturation is followed this much beyond both ends of what is offered, K, so that rounding at an end does
+/// not leave the line.
+const BEYOND_THE_ENDS_K: f64 = 1e-3;
 /// More points than any picture needs.
 const MOST_DOME_POINTS: f64 = 1000.0;
 
@@ -54,6 +58,7 @@ const GREATEST_LIQUID_FRACTION: f64 = 1.05;
 /// ```
 pub struct Equation {
     pub(super) helmholtz: Helmholtz,
+    dome: Dome,
     enthalpy_offset: f64,
     entropy_offset: f64,
     /// Saturated states at the two ends of the range, without offset.
@@ -69,15 +74,23 @@ impl Equation {
     /// [`PropertyError::Coefficients`] if a built-in file is damaged (the tests load every one).
     pub fn new(refrigerant: Refrigerant) -> Result<Equation, PropertyError> {
         let helmholtz = Helmholtz::new(refrigerant)?;
-        let (reference, _) = helmholtz.equilibrium(REFERENCE_TEMPERATURE_C + ZERO_CELSIUS_K)?;
-        let (coldest, _) = helmholtz.equilibrium(LOWEST_TEMPERATURE_C + ZERO_CELSIUS_K)?;
-        let (hottest, _) =
-            helmholtz.equilibrium(helmholtz.critical_temperature_k - CRITICAL_MARGIN_K)?;
+        let lowest_k = LOWEST_TEMPERATURE_C + ZERO_CELSIUS_K;
+        let critical_k = helmholtz.critical_temperature_k;
+        let dome = Dome::follow(
+            &helmholtz,
+            lowest_k - BEYOND_THE_ENDS_K,
+            critical_k - DOME_MARGIN_K + BEYOND_THE_ENDS_K,
+        )?;
+        let at = |temperature_k: f64| dome.equilibrium(&helmholtz, temperature_k);
+        let (reference, _) = at(REFERENCE_TEMPERATURE_C + ZERO_CELSIUS_K)?;
+        let (coldest, _) = at(lowest_k)?;
+        let (hottest, _) = at(critical_k - CRITICAL_MARGIN_K)?;
         Ok(Equation {
             enthalpy_offset: REFERENCE_ENTHALPY_KJ_PER_KG - reference.enthalpy,
             entropy_offset: REFERENCE_ENTROPY_KJ_PER_KG_K - reference.entropy,
             ends: [coldest, hottest],
             greatest_liquid_density: GREATEST_LIQUID_FRACTION * coldest.density,
+            dome,
             helmholtz,
         })
     }
@@ -165,7 +178,7 @@ impl Equation {
     }
 
     fn equilibrium(&self, temperature_c: f64) -> Result<Saturation, PropertyError> {
-        let (liquid, vapour) = self.helmholtz.equilibrium(temperature_c + ZERO_CELSIUS_K)?;
+        let (liquid, vapour) = self.saturated_phases(temperature_c + ZERO_CELSIUS_K)?;
         Ok(Saturation {
             temperature_c,
             pressure_kpa: vapour.pressure,
@@ -198,7 +211,7 @@ impl Equation {
         let bracket = (self.ends[0].temperature_k, self.ends[1].temperature_k);
         let temperature_k =
             increasing_root(bracket, start, TEMPERATURE_TOLERANCE, |temperature_k| {
-                let (liquid, vapour) = self.helmholtz.equilibrium(temperature_k).ok()?;
+                let (liquid, vapour) = self.saturated_phases(temperature_k).ok()?;
                 let slope = (vapour.enthalpy - liquid.enthalpy)
                     / (temperature_k * (1.0 / vapour.density - 1.0 / liquid.density));
                 Some((vapour.pressure.ln() - wanted, slope / vapour.pressure))
@@ -268,6 +281,14 @@ impl Equation {
             &self.saturation_at_pressure(pressure_kpa)?,
             enthalpy_kj_per_kg,
         )
+    }
+
+    /// Saturated liquid and vapour at a temperature in K.
+    pub(super) fn saturated_phases(
+        &self,
+        temperature_k: f64,
+    ) -> Result<(Phase, Phase), PropertyError> {
+        self.dome.equilibrium(&self.helmholtz, temperature_k)
     }
 
     pub(super) fn point(&self, phase: Phase, quality: Option<f64>) -> StatePoint {

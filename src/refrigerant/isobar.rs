@@ -181,7 +181,7 @@ impl Equation {
         } else {
             // Not the liquid of this isobar: an isotherm crosses the dome in loops, and only beyond the
             // saturated liquid of its own temperature is there no second density of the same pressure.
-            let saturated = self.helmholtz.equilibrium(temperature_k).ok()?.0.density;
+            let saturated = self.saturated_phases(temperature_k).ok()?.0.density;
             ((saturated, self.greatest_liquid_density), saturated)
         };
         increasing_root(

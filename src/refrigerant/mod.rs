@@ -6,6 +6,7 @@
 //! evaluates the equations (feos) is seen by `helmholtz.rs` alone and never leaves this room.
 
 mod chebyshev;
+mod dome;
 mod equation;
 mod error;
 mod facts;

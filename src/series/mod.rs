@@ -1,11 +1,14 @@
 //! One column of hourly values from a CSV file: prices, carbon intensity, household load, own generation.
 
+mod layout;
 mod read;
+mod time;
 
 use std::fs;
 use std::path::Path;
 
-pub use read::{Layout, Stamp, read_csv, read_text};
+pub use layout::{Layout, Stamp, WithinHour};
+pub use read::{read_csv, read_text};
 
 use chrono::{DateTime, Datelike, TimeZone, Timelike, Utc};
 
@@ -42,6 +45,11 @@ impl Series {
     /// End of the last hour.
     pub fn end(&self) -> DateTime<Utc> {
         instant(self.first_hour + i64::try_from(self.values.len()).unwrap_or(0))
+    }
+
+    /// From when to when there are values, in words.
+    pub fn covers(&self) -> String {
+        format!("{} to {}", say(self.start()), say(self.end()))
     }
 
     /// Multiplies every value.
@@ -89,6 +97,11 @@ fn utc_hour(civil: &CivilHour) -> i64 {
         .timestamp();
     let local = midnight + i64::from(civil.hour) * 3600 + i64::from(civil.minute) * 60;
     (local - i64::from(civil.offset_s)).div_euclid(3600)
+}
+
+/// An instant as messages write it.
+pub fn say(instant: DateTime<Utc>) -> String {
+    instant.format("%Y-%m-%d %H:%M UTC").to_string()
 }
 
 /// The instant of a count of hours.

@@ -5,32 +5,12 @@
 
 use std::path::Path;
 
-use chrono::{DateTime, Duration, LocalResult, NaiveDate, NaiveDateTime, TimeZone, Utc};
-use chrono_tz::Tz;
+use chrono::{DateTime, Duration, Utc};
 
-use super::Series;
+use super::layout::{Layout, Stamp, WithinHour};
+use super::time::{Wrong, instant};
+use super::{Series, say};
 use crate::problem::{Place, Problem, Problems};
-
-/// What the time beside a value marks.
-#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
-pub enum Stamp {
-    /// The beginning of the interval.
-    #[default]
-    Beginning,
-    /// Its end.
-    Ending,
-}
-
-/// How a file is to be read.
-#[derive(Debug, Clone, PartialEq, Eq)]
-pub struct Layout {
-    /// Header of the column of values; may be left out when there is only one beside the times.
-    pub column: Option<String>,
-    /// What its times mark.
-    pub stamp: Stamp,
-    /// The clock of times that do not carry an offset.
-    pub zone: Tz,
-}
 
 /// Header of the column of times.
 const TIME: &str = "time";
@@ -41,7 +21,7 @@ const FEWEST: usize = 2;
 /// Seconds in an hour.
 const HOUR_S: i64 = 3600;
 
-/// Reads the values of a file; several values within an hour are averaged.
+/// Reads the values of a file.
 ///
 /// # Errors
 /// Every line that cannot be used: a time or number that is not one, a time twice, out of order or after a gap; or
@@ -97,20 +77,7 @@ pub fn read_text(file: &str, text: &str, layout: &Layout) -> Result<Series, Prob
     }
     // A refused line leaves a gap that is no news.
     limited(problems)?;
-    hours(&place, rows, layout.stamp)
-}
-
-/// What is wrong with one field.
-struct Wrong {
-    found: String,
-    allowed: &'static str,
-    remedy: &'static str,
-}
-
-impl Wrong {
-    fn at(self, place: Place) -> Problem {
-        Problem::new(place, self.found, self.allowed, self.remedy)
-    }
+    hours(&place, rows, layout)
 }
 
 fn unreadable(place: &Place, error: &csv::Error) -> Problems {
@@ -144,12 +111,14 @@ fn columns(
     layout: &Layout,
     place: &Place,
 ) -> Result<(usize, usize), Problems> {
+    let line = headers.position().map_or(1, |position| position.line());
+    let line = usize::try_from(line).unwrap_or(1);
     let names: Vec<_> = headers.iter().collect();
     let find = |wanted: &str| names.iter().position(|name| *name == wanted);
     let refuse = |found: String, remedy: &str| {
         let allowed = format!("a column \"{TIME}\" and one of values");
         Problems::from(Problem::new(
-            place.clone().at_line(1),
+            place.clone().at_line(line),
             found,
             allowed,
             remedy,
@@ -176,60 +145,6 @@ fn columns(
     Ok((time, value))
 }
 
-/// The instant of a time; a clock time that occurs twice is the second one when the first has gone by.
-fn instant(text: &str, zone: Tz, before: Option<DateTime<Utc>>) -> Result<DateTime<Utc>, Wrong> {
-    let wrong = |found| Wrong {
-        found,
-        allowed: "a time such as 2024-01-31T15:00Z or 2024-01-31 15:00",
-        remedy: "write year-month-day and hour:minute",
-    };
-    for form in [
-        "%Y-%m-%dT%H:%M:%S%#z",
-        "%Y-%m-%dT%H:%M%#z",
-        "%Y-%m-%d %H:%M:%S%#z",
-        "%Y-%m-%d %H:%M%#z",
-    ] {
-        if let Ok(instant) = DateTime::parse_from_str(text, form) {
-            return Ok(instant.with_timezone(&Utc));
-        }
-    }
-    let clock = [
-        "%Y-%m-%dT%H:%M:%S",
-        "%Y-%m-%dT%H:%M",
-        "%Y-%m-%d %H:%M:%S",
-        "%Y-%m-%d %H:%M",
-    ]
-    .iter()
-    .find_map(|form| NaiveDateTime::parse_from_str(text, form).ok())
-    .or_else(|| end_of_day(text))
-    .ok_or_else(|| wrong(format!("\"{text}\" is not a time")))?;
-    match zone.from_local_datetime(&clock) {
-        LocalResult::Single(instant) => Ok(instant.with_timezone(&Utc)),
-        LocalResult::Ambiguous(first, second) => {
-            let first = first.with_timezone(&Utc);
-            if before.is_none_or(|before| before < first) {
-                Ok(first)
-            } else {
-                Ok(second.with_timezone(&Utc))
-            }
-        }
-        LocalResult::None => Err(Wrong {
-            found: format!("{text} does not exist in {zone}: the clock skips it"),
-            allowed: "times that the clock shows",
-            remedy: "set the time zone the file is really in, such as time_zone = \"UTC\"",
-        }),
-    }
-}
-
-/// `2024-01-31 24:00`, the midnight that ends the day.
-fn end_of_day(text: &str) -> Option<NaiveDateTime> {
-    let date = ["T24:00:00", " 24:00:00", "T24:00", " 24:00"]
-        .iter()
-        .find_map(|end| text.strip_suffix(end))?;
-    let date: NaiveDate = date.parse().ok()?;
-    date.succ_opt()?.and_hms_opt(0, 0, 0)
-}
-
 fn number(text: &str) -> Result<f64, Wrong> {
     let wrong = |found: String| Wrong {
         found,
@@ -247,7 +162,7 @@ fn number(text: &str) -> Result<f64, Wrong> {
 fn hours(
     place: &Place,
     rows: Vec<(usize, DateTime<Utc>, f64)>,
-    stamp: Stamp,
+    layout: &Layout,
 ) -> Result<Series, Problems> {
     let refuse = |line: Option<usize>, found: String, allowed: &str, remedy: &str| {
         let mut place = place.clone().in_field(TIME);
@@ -275,7 +190,7 @@ fn hours(
         let gap = (*here - *before).num_seconds();
         let expected = *before + Duration::seconds(step);
         if gap == 0 {
-            let found = format!("{here} a second time");
+            let found = format!("{} a second time", say(*here));
             problems.push(refuse(
                 Some(*line),
                 found,
@@ -283,7 +198,7 @@ fn hours(
                 "remove one of the two",
             ));
         } else if gap < 0 {
-            let found = format!("{here} after {before}");
+            let found = format!("{} after {}", say(*here), say(*before));
             problems.push(refuse(
                 Some(*line),
                 found,
@@ -291,13 +206,13 @@ fn hours(
                 "sort the lines by time",
             ));
         } else if gap != step {
-            let found = format!("nothing from {expected} to {here}");
+            let found = format!("nothing from {} to {}", say(expected), say(*here));
             let remedy = "no value is filled in: add the missing lines";
             problems.push(refuse(Some(*line), found, "no gaps", remedy));
         }
     }
     limited(problems)?;
-    let back = match stamp {
+    let back = match layout.stamp {
         Stamp::Beginning => 0,
         Stamp::Ending => step,
     };
@@ -306,17 +221,25 @@ fn hours(
     };
     let start = first - Duration::seconds(back);
     let per_hour = usize::try_from(HOUR_S / step).unwrap_or(1);
-    if start.timestamp().rem_euclid(HOUR_S) != 0 || rows.len() % per_hour != 0 {
-        let found = format!("{} values from {start}, {per_hour} an hour", rows.len());
+    if start.timestamp().rem_euclid(HOUR_S) != 0 || !rows.len().is_multiple_of(per_hour) {
+        let found = format!(
+            "{} values from {}, {per_hour} an hour",
+            rows.len(),
+            say(start)
+        );
         let remedy = "begin and end on the hour; do the times mark the beginning or the end of the interval?";
         return Err(refuse(Some(line), found, "whole hours", remedy).into());
     }
-    let mean = |hour: &[(usize, DateTime<Utc>, f64)]| {
-        hour.iter().map(|row| row.2).sum::<f64>() / hour.len() as f64
+    let hour = |rows: &[(usize, DateTime<Utc>, f64)]| {
+        let sum: f64 = rows.iter().map(|row| row.2).sum();
+        match layout.within_hour {
+            WithinHour::Mean => sum / rows.len() as f64,
+            WithinHour::Sum => sum,
+        }
     };
     Ok(Series::new(
         start,
-        rows.chunks(per_hour).map(mean).collect(),
+        rows.chunks(per_hour).map(hour).collect(),
     ))
 }
 
@@ -329,6 +252,7 @@ mod tests {
             column: None,
             stamp,
             zone: zone.parse().unwrap(),
+            within_hour: WithinHour::Mean,
         }
     }
 
@@ -343,6 +267,12 @@ mod tests {
         assert_eq!(series.start().to_string(), "2024-01-01 00:00:00 UTC");
         let halves = "time,price\n2024-01-01 00:00,1\n2024-01-01 00:30,2\n2024-01-01 01:00,3\n2024-01-01 01:30,5\n";
         assert_eq!(utc(halves).unwrap().values(), [1.5, 4.0]);
+        let sum = Layout {
+            within_hour: WithinHour::Sum,
+            ..layout("UTC", Stamp::Beginning)
+        };
+        let summed = read_text("p", halves, &sum).unwrap();
+        assert_eq!(summed.values(), [3.0, 8.0]);
     }
 
     /// Stamps at the end of the hour name the hour before them; read as beginnings all prices move by an hour.
@@ -393,10 +323,10 @@ mod tests {
         for (tail, said) in [
             (
                 "2024-01-01 04:00,1\n",
-                "nothing from 2024-01-01 02:00:00 UTC to 2024-01-01 04:00:00 UTC",
+                "nothing from 2024-01-01 02:00 UTC to 2024-01-01 04:00 UTC",
             ),
             ("2024-01-01 01:00,1\n", "a second time"),
-            ("2023-12-31 00:00,1\n", "2023-12-31 00:00:00 UTC after"),
+            ("2023-12-31 00:00,1\n", "2023-12-31 00:00 UTC after"),
         ] {
             let problems = utc(&format!("{head}{tail}")).unwrap_err();
             let first = problems.iter().next().unwrap();

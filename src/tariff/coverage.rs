@@ -4,7 +4,8 @@ use std::collections::BTreeMap;
 
 use chrono::Weekday;
 
-use super::clock::{Days, MINUTES, When, YearDay, clock};
+use super::clock::{MINUTES, When, clock};
+use super::days::{Days, YearDay};
 
 /// Something wrong with a set of bands.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -29,29 +30,15 @@ pub enum Flaw {
     },
 }
 
+/// Days of the year, each with the weekdays that it may fall on.
+type DaySet = Vec<(YearDay, Weekday)>;
+
 /// Every flaw of a list of bands, each once, with all the days it occurs on.
 pub fn flaws(bands: &[When]) -> Vec<Flaw> {
-    // Days on which the same bands hold are one kind of day, judged once.
-    let mut kinds: BTreeMap<Vec<usize>, Vec<(YearDay, Weekday)>> = BTreeMap::new();
-    for day in YearDay::all() {
-        for weekday in WEEK {
-            let active = (0..bands.len())
-                .filter(|&i| bands.get(i).is_some_and(|band| band.on(day, weekday)))
-                .collect();
-            kinds.entry(active).or_default().push((day, weekday));
-        }
-    }
     // The same flaw on several kinds of day is one flaw.
-    let mut found: BTreeMap<(u8, usize, usize, String), Vec<(YearDay, Weekday)>> = BTreeMap::new();
-    for (active, days) in kinds {
-        let covering = |minute| {
-            let mut holding = active
-                .iter()
-                .copied()
-                .filter(|&i| bands.get(i).is_some_and(|band| band.window.holds(minute)));
-            (holding.next(), holding.next())
-        };
-        for (from, to, cover) in runs(covering) {
+    let mut found: BTreeMap<(u8, usize, usize, String), DaySet> = BTreeMap::new();
+    for (active, days) in kinds(bands) {
+        for (from, to, cover) in runs(bands, &active) {
             let clock = format!("{}–{}", clock(from), clock(to));
             let key = match cover {
                 (None, _) => (0, 0, 0, clock),
@@ -93,17 +80,65 @@ const WEEK: [Weekday; 7] = [
 /// Which bands hold at a minute: the first, and a second if there is one.
 type Cover = (Option<usize>, Option<usize>);
 
-/// Stretches of the day with the same cover.
-fn runs(covering: impl Fn(u16) -> Cover) -> Vec<(u16, u16, Cover)> {
+/// Days on which the same bands hold are one kind of day: the bands, and the days.
+fn kinds(bands: &[When]) -> BTreeMap<Vec<usize>, DaySet> {
+    let mut kinds: BTreeMap<Vec<usize>, DaySet> = BTreeMap::new();
+    for day in YearDay::all() {
+        for weekday in WEEK {
+            let active = (0..bands.len())
+                .filter(|&i| bands.get(i).is_some_and(|band| band.on(day, weekday)))
+                .collect();
+            kinds.entry(active).or_default().push((day, weekday));
+        }
+    }
+    kinds
+}
+
+/// Stretches of a day with the same cover, of the bands that hold on it.
+fn runs(bands: &[When], active: &[usize]) -> Vec<(u16, u16, Cover)> {
     let mut runs: Vec<(u16, u16, Cover)> = Vec::new();
     for minute in 0..MINUTES {
-        let cover = covering(minute);
+        let mut holding = active
+            .iter()
+            .copied()
+            .filter(|&i| bands.get(i).is_some_and(|band| band.window.holds(minute)));
+        let cover = (holding.next(), holding.next());
         match runs.last_mut() {
             Some((_, to, last)) if *last == cover => *to = minute + 1,
             _ => runs.push((minute, minute + 1, cover)),
         }
     }
     runs
+}
+
+/// A kind of day in words, and the band of each stretch of it: from, to, place in the list.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct ClockDay {
+    /// Which days, such as `Monday to Friday, 1 November to 31 March`.
+    pub days: String,
+    /// Minutes after midnight from and to, and the band.
+    pub stretches: Vec<(u16, u16, usize)>,
+}
+
+/// Every kind of day of a list of bands, in the order in which the year meets them.
+pub fn clock_days(bands: &[When]) -> Vec<ClockDay> {
+    let mut kinds: Vec<_> = kinds(bands).into_iter().collect();
+    kinds.sort_by_key(|(_, days)| {
+        let first = days.first();
+        first.map(|&(day, weekday)| (day, weekday.num_days_from_monday()))
+    });
+    let stretches = |active: &[usize]| {
+        let runs = runs(bands, active).into_iter();
+        runs.filter_map(|(from, to, (band, _))| Some((from, to, band?)))
+            .collect()
+    };
+    kinds
+        .iter()
+        .map(|(active, days)| ClockDay {
+            days: say_days(days),
+            stretches: stretches(active),
+        })
+        .collect()
 }
 
 /// A set of days in words: its days of the week and its parts of the year.
@@ -138,7 +173,8 @@ fn say_days(days: &[(YearDay, Weekday)]) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::super::clock::{Season, Window, parse_clock};
+    use super::super::clock::{Window, parse_clock};
+    use super::super::days::Season;
     use super::*;
 
     fn when(from: &str, to: &str, days: &str, season: Option<&str>) -> When {
@@ -200,6 +236,23 @@ mod tests {
                 clock: "07:00–08:00".to_owned(),
                 days: "every day".to_owned(),
             }]
+        );
+    }
+
+    #[test]
+    fn a_clock_day_lists_its_bands_in_order() {
+        let bands = [
+            when("23:00", "07:00", "every day", None),
+            when("07:00", "23:00", "weekdays", None),
+            when("07:00", "23:00", "weekends", None),
+        ];
+        let day = |days: &str, band| ClockDay {
+            days: days.to_owned(),
+            stretches: vec![(0, 420, 0), (420, 1380, band), (1380, 1440, 0)],
+        };
+        assert_eq!(
+            clock_days(&bands),
+            [day("Monday to Friday", 1), day("Saturday and Sunday", 2)]
         );
     }
 

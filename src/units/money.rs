@@ -105,6 +105,20 @@ impl Currency {
         rounded
     }
 
+    /// A price in words, in the sub-unit where one is usual and the price is below 1: `24.67 p/kWh`, `1.31 EUR/m³`.
+    pub fn price_words(self, amount: Decimal, per: &str) -> String {
+        let (number, name) = if amount.abs() < Decimal::ONE && self.small() != self.0 {
+            (amount * Decimal::ONE_HUNDRED, self.small())
+        } else {
+            (amount, self.0)
+        };
+        let mut number = number.round_dp(4).normalize();
+        if number.scale() < 2 {
+            number.rescale(2);
+        }
+        format!("{number} {name}/{per}")
+    }
+
     /// Major units in one of a spelling, when the spelling belongs to this currency.
     fn factor(self, spelling: &str) -> Option<Decimal> {
         let spelled = |table: &[(&str, &[&str])]| {
@@ -295,6 +309,16 @@ mod tests {
         assert!(price("24 p", "GBP").is_err());
         assert!(price("p/kWh", "GBP").is_err());
         assert!(price("24 kWh", "GBP").is_err());
+    }
+
+    #[test]
+    fn prices_are_said_in_the_handiest_unit() {
+        let say = |text: &str, code| currency(code).price_words(text.parse().unwrap(), "kWh");
+        assert_eq!(say("0.2467", "GBP"), "24.67 p/kWh");
+        assert_eq!(say("0.094", "GBP"), "9.40 p/kWh");
+        assert_eq!(say("1.31", "EUR"), "1.31 EUR/kWh");
+        assert_eq!(say("31", "JPY"), "31.00 JPY/kWh");
+        assert_eq!(say("0.123456", "EUR"), "12.3456 ct/kWh");
     }
 
     #[test]

@@ -102,13 +102,14 @@ pub fn step<P: Probe>(
     // What answers.
     match &system.heating {
         Heating::HeatPump(system) => {
-            let offer = system.source.offer(hour, outdoor_c);
+            let offer = system.source.offer(hour, outdoor_c, &state.ground);
             let cold = ColdSide {
                 open_c: offer.open_c,
                 k_per_kw: offer.k_per_kw,
                 relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
             };
             heat_pump_hour(system, home, &cold, &water, &rooms, &mut row, probe);
+            ground_hour(hour, system, state, &mut row);
         }
         Heating::Boiler {
             boiler,
@@ -198,6 +199,14 @@ fn store_hour(home: &Home, water: &StoreStep, state: &mut State, row: &mut Row) 
     row.store_c = Some(state.store_c);
 }
 
+/// Tells the source what was drawn, and charges its pump.
+fn ground_hour(hour: usize, system: &MachineSystem, state: &mut State, row: &mut Row) {
+    let source = &system.source;
+    source.drawn(hour, row.extracted_kwh, &mut state.ground);
+    row.source_side_kwh += source.pump_kwh(hour, row.running_hours);
+    row.returned_kwh = source.returned_kwh(hour);
+}
+
 /// A heat pump: a block of hot water first, the rooms in what is left of the hour, backup for what is missing.
 fn heat_pump_hour<P: Probe>(
     system: &MachineSystem,
@@ -238,7 +247,13 @@ fn heat_pump_hour<P: Probe>(
         row.flags |= Flags::BACKUP.when(row.backup_kwh > 0.0);
         row.circulation_kwh = system.circulation_kw * hours_left;
     }
-    row.idle_kwh = system.machine.idle_kw() * (1.0 - row.running_hours).max(0.0);
+    let idle = system.machine.idle();
+    let at_rest_kw = if row.running_hours > 0.0 || rooms.wanted_kwh > 0.0 {
+        idle.thermostat_off_kw
+    } else {
+        idle.standby_kw + idle.crankcase_kw
+    };
+    row.idle_kwh = at_rest_kw * (1.0 - row.running_hours).max(0.0);
 }
 
 /// Flow minus return while the machine runs: the design water flow carries the heat of the running time.
@@ -263,7 +278,7 @@ fn hot_water_block<P: Probe>(
     let Some(store) = home.hot_water.as_ref().and_then(|water| water.store) else {
         return 0.0;
     };
-    let reachable_c = system.machine.greatest_flow_c(cold.open_c) - store.coil_k;
+    let reachable_c = system.machine.limits().highest_flow_at(cold.open_c) - store.coil_k;
     let end_c = store.set_point_c.min(reachable_c);
     let machine_kwh =
         ((end_c - water.before_c) * store.capacity_kwh_per_k).clamp(0.0, water.wanted_kwh);
@@ -307,9 +322,15 @@ fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
     row.extracted_kwh += delivered.extracted_kwh;
     row.running_hours += delivered.running_hours;
     row.starts += delivered.starts;
-    row.source_c = Some(delivered.source_c);
+    if delivered.running_hours > 0.0 {
+        // Of two duties in the hour the colder: what the source had to bear.
+        row.source_c = Some(
+            row.source_c
+                .map_or(delivered.source_c, |c| c.min(delivered.source_c)),
+        );
+    }
     row.flags |= Flags::CYCLING.when(delivered.flags.cycling)
-        | Flags::FLOW_CAPPED.when(delivered.flags.flow_capped)
+        | Flags::FLOW_CAPPED.when(delivered.flags.capped_flow)
         | Flags::MACHINE_STOPPED.when(delivered.flags.stopped)
         | Flags::AT_GREATEST_OUTPUT.when(delivered.flags.short)
         | Flags::FROSTING.when(delivered.flags.frosting);

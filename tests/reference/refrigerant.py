@@ -63,7 +63,9 @@ for fluid in FLUIDS:
     # saturation: every 5 K from -70 degC, then closer and closer to the critical point
     temperatures = [t for t in range(-70, 200, 5) if t < critical_c - 5]
     temperatures += [critical_c - d for d in (5.0, 3.0, 2.0, 1.0)]
-    for t in temperatures:
+    # where a solver without a guess was seen to leave the line of saturation (R290, R1234yf)
+    window = [80.13 + 0.005 * i for i in range(20) if critical_c > 90]
+    for t in temperatures + window:
         phases = []
         for quality in (0.0, 1.0):
             s.update(CP.QT_INPUTS, quality, t + K)

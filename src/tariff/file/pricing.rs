@@ -1,7 +1,6 @@
 //! From the text of a price to a rate per unit of fuel.
 
 use rust_decimal::Decimal;
-use rust_decimal::prelude::ToPrimitive;
 
 use super::fields::TariffFields;
 use super::{DOCUMENT, parsed};
@@ -27,6 +26,12 @@ const LARGE_UNIT: [&str; 7] = ["GBP", "EUR", "USD", "CHF", "CAD", "AUD", "NZD"];
 /// Currency units per kilowatt-hour; common practice, no source.
 const HIGH: f64 = 2.0;
 
+/// What to do about a negative price of energy.
+const HOURLY_ONLY: &str =
+    "if it is meant, give it in an [hourly] series, the only place where prices may be negative";
+/// What to do about a negative charge.
+const CHECK_SIGN: &str = "check the sign; what is paid to the household is written as export";
+
 /// How the prices of a tariff are to be understood.
 pub(super) struct Pricing {
     currency: Option<Currency>,
@@ -48,7 +53,7 @@ impl Pricing {
         let calorific_value = parsed(check, &fields.calorific_value, CalorificValue::parse);
         let basis = check.value(&fields.calorific_basis).map(|(basis,)| basis);
         if fields.calorific_basis.is_none() && fuel.is_some_and(Fuel::is_burnt) {
-            check.missing(&DOCUMENT, "calorific_basis", "\"gross\" or \"net\"");
+            check.missing(&DOCUMENT, "calorific_basis", "\"gross\"  # or \"net\"");
         }
         let correction = check.plain_within(&fields.volume_correction, &VOLUME_CORRECTION);
         Self {
@@ -102,7 +107,7 @@ impl Pricing {
         leaf: &Option<Leaf<String>>,
     ) -> Option<Rate> {
         let rate = self.rate(check, leaf)?;
-        not_negative(check, leaf, rate.amount).then_some(rate)
+        not_negative(check, leaf, rate.amount, HOURLY_ONLY).then_some(rate)
     }
 
     /// The rate of a unit such as `EUR/MWh`, for a price of one.
@@ -178,7 +183,7 @@ impl Pricing {
                 per,
             }))
         })??;
-        not_negative(check, leaf, standing.amount).then_some(standing)
+        not_negative(check, leaf, standing.amount, CHECK_SIGN).then_some(standing)
     }
 
     /// A charge per kilowatt and month.
@@ -197,7 +202,7 @@ impl Pricing {
                 }),
             }
         })??;
-        not_negative(check, leaf, amount).then_some(amount)
+        not_negative(check, leaf, amount, CHECK_SIGN).then_some(amount)
     }
 
     /// A unit of fuel and the gross kilowatt-hours in it; nothing when the fuel is not known.
@@ -244,15 +249,17 @@ impl Pricing {
 }
 
 /// Refuses a negative price outside an hourly series.
-fn not_negative(check: &mut Check, leaf: &Option<Leaf<String>>, amount: Decimal) -> bool {
+fn not_negative(
+    check: &mut Check,
+    leaf: &Option<Leaf<String>>,
+    amount: Decimal,
+    remedy: &str,
+) -> bool {
     let negative = amount.is_sign_negative() && !amount.is_zero();
     if let Some(leaf) = leaf.as_ref().filter(|_| negative) {
-        check.refuse(
-            &leaf.span(),
-            format!("{} is negative", amount.to_f64().unwrap_or(f64::NAN)),
-            "prices from 0",
-            "if it is meant, give it in an [hourly] series, the only place where prices may be negative",
-        );
+        let text = leaf.value().map_or("", String::as_str);
+        let found = format!("\"{text}\" is negative");
+        check.refuse(&leaf.span(), found, "prices from 0", remedy);
     }
     !negative
 }

@@ -1,0 +1,163 @@
+//! One hour of the heat pump: what it gives for what is wanted, and what that takes.
+//!
+//! Limits, frost, cycling and the source's fall meet here, around look-ups in the map. Nothing is allocated and no power is
+//! raised; what is computed per hour is a handful of look-ups and, in damp cold, a few exponentials.
+
+use super::duty::{ColdSide, Delivered, Duty, Flags};
+use super::heat_pump::HeatPump;
+use super::part_load::{running_rise_k, start_up_loss_kw, starts_per_hour};
+use super::steady::{Steady, Wanted};
+
+/// Change of the running flow temperature below which its substitution ends, K, and the most substitutions.
+const RISE_TOLERANCE_K: f64 = 1e-5;
+const MOST_RISE_STEPS: usize = 30;
+/// Difference of wanted and greatest heat that is no shortfall, relative: rounding.
+const ENOUGH: f64 = 1e-9;
+
+impl HeatPump {
+    /// What the machine does with an hour.
+    ///
+    /// Outside its limits it stands, or gives what it can below its highest flow temperature. Between its least and greatest
+    /// output it runs all the time at the heat wanted; below it goes on and off at a hotter flow; a block at full output runs
+    /// until it is done. Frost (outdoor air only) follows coil temperature and humidity; without humidity the air is that of the
+    /// standard rating conditions.
+    pub fn deliver(&self, cold: &ColdSide, duty: &Duty) -> Delivered {
+        let core = &*self.core;
+        let mut flags = Flags::default();
+        if !(duty.heat_kw > 0.0 && duty.hours > 0.0) {
+            return Delivered::standing(flags);
+        }
+        if !core.limits.allows_source(cold.open_c) {
+            flags.stopped = true;
+            return Delivered::standing(flags);
+        }
+        let highest_c = core.limits.highest_flow_at(cold.open_c);
+        flags.capped_flow = duty.flow_c > highest_c;
+        let lifted = share_below(highest_c, duty);
+        if lifted <= 0.0 {
+            return Delivered::standing(flags);
+        }
+        let flow_c = duty.flow_c.min(highest_c);
+        let wanted_kw = duty.heat_kw * lifted / self.scale;
+        let moisture = self.moisture(cold);
+
+        let full = self.steady(cold, flow_c, Wanted::Greatest, moisture);
+        let (steady, flow_c, share) = if duty.at_full_output || wanted_kw >= full.net_kw() {
+            flags.short = wanted_kw > full.net_kw() * (1.0 + ENOUGH);
+            (full, flow_c, (wanted_kw / full.net_kw()).min(1.0))
+        } else {
+            self.below_greatest(cold, duty, wanted_kw, flow_c, highest_c, moisture)
+        };
+        if steady.source_c < core.limits.lowest_source_c {
+            flags.stopped = true;
+            return Delivered::standing(flags);
+        }
+        flags.cycling = share < 1.0 && !duty.at_full_output;
+        flags.frosting = steady.loss.cop > 0.0;
+        self.account(duty, &steady, flow_c, share, flags)
+    }
+
+    /// Greatest heat that reaches the house at a flow temperature, kW, frost deducted and the source's fall met; 0 outside the
+    /// limits.
+    pub fn greatest_output_kw(&self, cold: &ColdSide, flow_c: f64) -> f64 {
+        let limits = &self.core.limits;
+        if !limits.allows_source(cold.open_c) || flow_c > limits.highest_flow_at(cold.open_c) {
+            return 0.0;
+        }
+        let steady = self.steady(cold, flow_c, Wanted::Greatest, self.moisture(cold));
+        if steady.source_c < limits.lowest_source_c {
+            return 0.0;
+        }
+        steady.net_kw() * self.scale
+    }
+
+    /// Least heat that it gives without going on and off, kW, frost deducted.
+    pub fn least_output_kw(&self, cold: &ColdSide, flow_c: f64) -> f64 {
+        let steady = self.steady(cold, flow_c, Wanted::Least, self.moisture(cold));
+        steady.net_kw() * self.scale
+    }
+
+    /// Runs at the heat wanted, or on and off when that is below the least: the machine, its flow temperature and the share of the
+    /// time that it runs.
+    fn below_greatest(
+        &self,
+        cold: &ColdSide,
+        duty: &Duty,
+        wanted_kw: f64,
+        flow_c: f64,
+        highest_c: f64,
+        moisture: f64,
+    ) -> (Steady, f64, f64) {
+        let mut least = self.steady(cold, flow_c, Wanted::Least, moisture);
+        if wanted_kw >= least.net_kw() {
+            let steady = self.steady(cold, flow_c, Wanted::Net(wanted_kw), moisture);
+            return (steady, flow_c, 1.0);
+        }
+        let mut running_c = flow_c;
+        for _ in 0..MOST_RISE_STEPS {
+            let share = (wanted_kw / least.net_kw()).min(1.0);
+            let next = (flow_c + running_rise_k(duty.spread_k, share)).min(highest_c);
+            let change = (next - running_c).abs();
+            if change < RISE_TOLERANCE_K {
+                break;
+            }
+            running_c = next;
+            least = self.steady(cold, running_c, Wanted::Least, moisture);
+        }
+        (least, running_c, (wanted_kw / least.net_kw()).min(1.0))
+    }
+
+    /// Adds an hour up from its steady machine.
+    fn account(
+        &self,
+        duty: &Duty,
+        steady: &Steady,
+        flow_c: f64,
+        share: f64,
+        flags: Flags,
+    ) -> Delivered {
+        let core = &*self.core;
+        let running_hours = duty.hours * share;
+        let heat = steady.net_kw() * running_hours;
+        // Electricity that this heat would take without frost; frost is charged beside it.
+        let plain = heat * steady.electric_kw / steady.gross_kw;
+        let tested_side = heat * steady.source_side_kw / steady.gross_kw;
+        let defrost = plain * (1.0 / (1.0 - steady.loss.cop) - 1.0);
+        let (start_up, starts) = if flags.cycling {
+            let loss = start_up_loss_kw(steady.electric_kw, share, core.cycling_coefficient);
+            (loss * duty.hours, starts_per_hour(share) * duty.hours)
+        } else {
+            (0.0, if duty.at_full_output { 1.0 } else { 0.0 })
+        };
+        let compressor = plain - tested_side + start_up;
+        let source_side = tested_side * self.source_side_factor;
+        let laboratory = compressor + source_side + defrost;
+        let size = self.scale;
+        Delivered {
+            heat_kwh: heat * size,
+            running_hours,
+            flow_c,
+            source_c: steady.source_c,
+            compressor_kwh: compressor * size,
+            source_side_kwh: source_side * size,
+            defrost_kwh: defrost * size,
+            allowance_kwh: laboratory * (1.0 / self.field_factor - 1.0) * size,
+            extracted_kwh: steady.extracted_kw * running_hours * size,
+            starts,
+            speed_fraction: steady.speed_share,
+            flags,
+        }
+    }
+}
+
+/// Share of the heat wanted that lies below a highest flow temperature: the machine warms the return up to there, and backup lifts
+/// the rest.
+fn share_below(highest_c: f64, duty: &Duty) -> f64 {
+    if duty.flow_c <= highest_c {
+        return 1.0;
+    }
+    if duty.spread_k <= 0.0 {
+        return 0.0;
+    }
+    (1.0 - (duty.flow_c - highest_c) / duty.spread_k).max(0.0)
+}

@@ -1,0 +1,41 @@
+//! Heat exchangers: how far the refrigerant must stand from the fluid it exchanges heat with.
+
+/// A heat exchanger on one side of the machine.
+///
+/// The fluid's flow rate hardly changes, so its effectiveness is constant and the temperature difference between the
+/// refrigerant and the fluid's hotter end grows in proportion to the heat (effectiveness relation of a condenser or
+/// evaporator, `Q = ε C (T1 − T2)`; textbook). The evaporator must also leave room for its superheat: suction
+/// gas cannot be warmer than what heats it, so superheat is the least approach there.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Exchanger {
+    /// Approach with hardly any heat flowing, K, ≥ 0: the superheat in an evaporator, 0 in a condenser.
+    pub floor_k: f64,
+    /// Growth of the approach with heat, K/kW, > 0.
+    pub k_per_kw: f64,
+}
+
+impl Exchanger {
+    /// Temperature difference at a heat flow (kW, ≥ 0), K.
+    ///
+    /// Evaporator: entering source minus evaporating temperature. Condenser: condensing minus flow temperature.
+    pub fn approach_k(&self, heat_kw: f64) -> f64 {
+        self.floor_k + self.k_per_kw * heat_kw
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// methods §13 \[from memory\]: typical approach 7–12 K at an air coil at full load.
+    #[test]
+    fn approach_grows_from_its_floor_in_proportion_to_heat() {
+        let coil = Exchanger {
+            floor_k: 5.0,
+            k_per_kw: 1.0,
+        };
+        assert_eq!(coil.approach_k(0.0), 5.0);
+        assert_eq!(coil.approach_k(4.0), 9.0);
+        assert!((7.0..=12.0).contains(&coil.approach_k(4.0)));
+    }
+}
