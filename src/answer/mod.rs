@@ -7,6 +7,7 @@ pub mod explain;
 pub mod machine;
 pub mod rating;
 pub mod tariff;
+pub mod weather;
 
 pub use compose::{Told, compose};
 pub use estimate::{

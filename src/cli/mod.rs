@@ -13,6 +13,7 @@ mod machine;
 mod output;
 mod rating;
 mod tariff;
+mod weather;
 
 use std::process::ExitCode;
 
@@ -43,6 +44,7 @@ enum Command {
     Machine(machine::Args),
     Rating(rating::Args),
     Tariff(tariff::Args),
+    Weather(weather::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -62,5 +64,6 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
         Command::Machine(args) => machine::run(args),
         Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
+        Command::Weather(args) => weather::run(args),
     }
 }
