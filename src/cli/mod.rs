@@ -44,7 +44,7 @@ enum Command {
     Machine(machine::Args),
     Rating(rating::Args),
     Tariff(tariff::Args),
-    Weather(weather::Args),
+    Weather(Box<weather::Args>),
 }
 
 /// Runs the command line of this process and returns its exit status.
