@@ -2,7 +2,7 @@
 
 use std::collections::BTreeMap;
 
-use chrono::DateTime;
+use chrono::{DateTime, Datelike, NaiveDateTime, Timelike, Weekday};
 
 use super::words::count;
 use super::zone::Zone;
@@ -10,6 +10,13 @@ use crate::problem::{Finding, Place, Severity};
 
 const DAY_S: i64 = 86_400;
 const HOUR_S: i64 = 3600;
+
+/// Whether clocks could change at a local time: the small hours of a Sunday in spring or autumn, north or south.
+pub(super) fn could_be(local: NaiveDateTime) -> bool {
+    matches!(local.month(), 3 | 4 | 9 | 10 | 11)
+        && local.weekday() == Weekday::Sun
+        && local.hour() <= 3
+}
 
 /// What the readings do at the clock changes of a civil zone.
 #[derive(Debug, Default)]

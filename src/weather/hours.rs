@@ -224,6 +224,7 @@ fn place_rows(
         line: &rows.line,
         begin_s: &instants.begin_s,
         zone: instants.zone,
+        zone_known: instants.zone_known,
     };
     let order = times.sorted(findings);
     let (Some(&first), Some(&last)) = (order.first(), order.last()) else {
