@@ -6,7 +6,9 @@ use super::estimate::{
     Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };
 use crate::problem::{Finding, Problems, Severity};
-use crate::study::{BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even};
+use crate::study::{
+    BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even,
+};
 use crate::year::Heating;
 
 /// What an estimate tells beside the figures of its case.
@@ -35,10 +37,19 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
     let mut systems = Vec::with_capacity(outcomes.len());
     let mut break_evens = BTreeMap::new();
     for (i, (contender, outcome)) in case.contenders.iter().zip(outcomes).enumerate() {
-        let system = system(contender, outcome, outcomes, told.machines.get(i).cloned().flatten());
+        let system = system(
+            contender,
+            outcome,
+            outcomes,
+            told.machines.get(i).cloned().flatten(),
+        );
         findings.extend(cautions(&system, contender));
         if i > 0 {
-            let levers = [Lever::ElectricityRate, Lever::FuelRate, Lever::FlowTemperature];
+            let levers = [
+                Lever::ElectricityRate,
+                Lever::FuelRate,
+                Lever::FlowTemperature,
+            ];
             let mut answers = Vec::new();
             for lever in levers {
                 if let Some(found) = break_even(case, outcomes, i, lever)? {
@@ -86,9 +97,12 @@ fn system(
     let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
     let burns_fuel = matches!(contender.system.heating, Heating::Boiler { .. });
     let balance = |with_hot_water| match &contender.system.heating {
-        Heating::HeatPump(machine) => {
-            balance_point(&contender.system, machine, contender.indoor_c, with_hot_water)
-        }
+        Heating::HeatPump(machine) => balance_point(
+            &contender.system,
+            machine,
+            contender.indoor_c,
+            with_hot_water,
+        ),
         _ => None,
     };
     let balance_points = (balance(false), balance(true));
@@ -114,10 +128,18 @@ fn system(
         balance_point_c: balance_points.0.and_then(BalancePoint::c),
         balance_point_with_hot_water_c: balance_points.1.and_then(BalancePoint::c),
         balance_point: balance_points.0.map(balance_words),
-        peak_electric_kw: outcome.years.iter().map(|year| year.peak_electric_kw).fold(0.0, f64::max),
+        peak_electric_kw: outcome
+            .years
+            .iter()
+            .map(|year| year.peak_electric_kw)
+            .fold(0.0, f64::max),
         hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
         hours_short: outcome.mean(|year| f64::from(year.hours_short)),
-        min_indoor_c: outcome.years.iter().map(|year| year.min_indoor_c).fold(f64::INFINITY, f64::min),
+        min_indoor_c: outcome
+            .years
+            .iter()
+            .map(|year| year.min_indoor_c)
+            .fold(f64::INFINITY, f64::min),
         starts: is_machine.then_some(sums.starts),
         cost: costs.total,
         cost_energy: costs.energy,
@@ -142,7 +164,11 @@ fn system(
             .years
             .iter()
             .zip(&costs.by_year)
-            .map(|(year, &cost)| YearAnswer { year: year.year, cost, spf_h4: year.sums.spf_h4() })
+            .map(|(year, &cost)| YearAnswer {
+                year: year.year,
+                cost,
+                spf_h4: year.sums.spf_h4(),
+            })
             .collect(),
     }
 }
@@ -151,7 +177,9 @@ fn balance_words(point: BalancePoint) -> String {
     match point {
         BalancePoint::At(c) => format!("{c:.1} °C"),
         BalancePoint::BelowRange(c) => format!("below {c:.0} °C"),
-        BalancePoint::AboveRange(c) => format!("above {c:.0} °C: the machine never carries the load"),
+        BalancePoint::AboveRange(c) => {
+            format!("above {c:.0} °C: the machine never carries the load")
+        }
     }
 }
 
@@ -169,7 +197,12 @@ fn cautions(system: &SystemAnswer, contender: &Contender) -> Vec<Finding> {
             "a larger machine, backup heat or larger emitters would be needed; size from a room-by-room heat-loss calculation by a competent person",
         ));
     }
-    let store = contender.system.home.hot_water.as_ref().and_then(|water| water.store);
+    let store = contender
+        .system
+        .home
+        .hot_water
+        .as_ref()
+        .and_then(|water| water.store);
     /// UK HSE guidance: stored hot water at 60 °C, arriving at the taps at no less than 50 °C within a minute.
     const HYGIENE_C: f64 = 60.0;
     if let Some(store) = store
@@ -190,7 +223,11 @@ fn lever_answer(found: &BreakEven, label: &str) -> LeverAnswer {
         lever: bound.label.to_owned(),
         unit: bound.unit.to_owned(),
         now: found.now,
-        values: found.crossings.iter().map(|crossing| crossing.value).collect(),
+        values: found
+            .crossings
+            .iter()
+            .map(|crossing| crossing.value)
+            .collect(),
         between: [bound.low, bound.high],
         sentence: sentence(found, label),
     }
@@ -219,11 +256,19 @@ fn sentence(found: &BreakEven, label: &str) -> String {
             let parts: Vec<_> = crossings
                 .iter()
                 .map(|crossing| {
-                    let side = if crossing.cheaper_above { "above" } else { "below" };
+                    let side = if crossing.cheaper_above {
+                        "above"
+                    } else {
+                        "below"
+                    };
                     format!("{} and is cheaper {side} it", amount(crossing.value))
                 })
                 .collect();
-            format!("\"{label}\" breaks even at a {} of {}.", bound.label, parts.join("; and again at "))
+            format!(
+                "\"{label}\" breaks even at a {} of {}.",
+                bound.label,
+                parts.join("; and again at ")
+            )
         }
     }
 }

@@ -25,5 +25,8 @@ pub(super) const BRIEF: &str = "terrace.toml";
 
 /// The content of an embedded file.
 pub(super) fn file(path: &str) -> Option<&'static [u8]> {
-    FILES.iter().find(|(name, _)| *name == path).map(|(_, content)| *content)
+    FILES
+        .iter()
+        .find(|(name, _)| *name == path)
+        .map(|(_, content)| *content)
 }

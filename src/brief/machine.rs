@@ -38,7 +38,11 @@ pub(super) fn machine(
         &bounds::FIELD_FACTOR,
         &defaults::MACHINE_FIELD_FACTOR,
     );
-    let ways = [table.machine.is_some(), table.typical_machine.is_some(), table.rated_cop.is_some()];
+    let ways = [
+        table.machine.is_some(),
+        table.typical_machine.is_some(),
+        table.rated_cop.is_some(),
+    ];
     if ways.iter().filter(|&&given| given).count() != 1 {
         check.refuse(
             &table.span(),
@@ -71,14 +75,26 @@ pub(super) fn machine(
         findings.extend(smaller_than_design(&machine, &label, warm));
     }
     for assumed in &sheet.assumed {
-        notes.add(format!("{}: {}", sheet.label, assumed.name), assumed.value.clone(), assumed.from);
+        notes.add(
+            format!("{}: {}", sheet.label, assumed.name),
+            assumed.value.clone(),
+            assumed.from,
+        );
     }
-    Some(MachineMade { machine, label, findings })
+    Some(MachineMade {
+        machine,
+        label,
+        findings,
+    })
 }
 
 fn label(machine: &HeatPump, table: &SystemTable) -> String {
     let output = format!("{:.1} kW", machine.rated_output_kw());
-    let letter = if machine.source() == SourceKind::Air { 'A' } else { 'B' };
+    let letter = if machine.source() == SourceKind::Air {
+        'A'
+    } else {
+        'B'
+    };
     let (source_c, flow_c) = machine.rated_condition();
     let size = format!("{output} at {letter}{source_c:.0}/W{flow_c:.0}");
     if table.typical_machine.is_some() {
@@ -88,9 +104,17 @@ fn label(machine: &HeatPump, table: &SystemTable) -> String {
     }
 }
 
-fn typical_sheet(table: &Section<SystemTable>, rated_output: Option<Power>, check: &mut Check) -> Option<Sheet> {
+fn typical_sheet(
+    table: &Section<SystemTable>,
+    rated_output: Option<Power>,
+    check: &mut Check,
+) -> Option<Sheet> {
     if table.rated_output.is_none() {
-        check.missing(&table.span(), "rated_output", "\"6 kW\", to which the typical machine is scaled");
+        check.missing(
+            &table.span(),
+            "rated_output",
+            "\"6 kW\", to which the typical machine is scaled",
+        );
     }
     let name = check.value(&table.typical_machine)?;
     let sheet = Sheet::typical(&name)
@@ -143,7 +167,8 @@ fn one_point(
         output.kw(),
         refrigerant = toml::Value::String(refrigerant),
     );
-    let sheet = Sheet::parse("rated point", &text).map_err(|problems| at_the_table(&problems, &span, check));
+    let sheet = Sheet::parse("rated point", &text)
+        .map_err(|problems| at_the_table(&problems, &span, check));
     check.take(sheet)
 }
 
@@ -151,7 +176,10 @@ fn one_point(
 fn at_the_table(problems: &Problems, span: &Range<usize>, check: &Check) -> Problems {
     let mut told = Problems::new();
     for problem in problems.iter() {
-        told.push(Problem { place: check.place(span), ..problem.clone() });
+        told.push(Problem {
+            place: check.place(span),
+            ..problem.clone()
+        });
     }
     told
 }
@@ -159,23 +187,38 @@ fn at_the_table(problems: &Problems, span: &Range<usize>, check: &Check) -> Prob
 /// Reads `"7 °C / 35 °C"`.
 fn rating_point(text: &str) -> Option<(f64, f64)> {
     let (source, flow) = text.split_once('/')?;
-    Some((parse::<Temperature>(source).ok()?.c(), parse::<Temperature>(flow).ok()?.c()))
+    Some((
+        parse::<Temperature>(source).ok()?.c(),
+        parse::<Temperature>(flow).ok()?.c(),
+    ))
 }
 
-fn source_agrees(table: &Section<SystemTable>, kind: SystemKind, sheet: &Sheet, check: &mut Check) -> Option<()> {
+fn source_agrees(
+    table: &Section<SystemTable>,
+    kind: SystemKind,
+    sheet: &Sheet,
+    check: &mut Check,
+) -> Option<()> {
     let agrees = match kind {
         SystemKind::GroundSource => sheet.source != SourceKind::Air,
         _ => sheet.source == SourceKind::Air,
     };
     if !agrees {
-        let leaf = if table.machine.is_some() { &table.machine } else { &table.typical_machine };
+        let leaf = if table.machine.is_some() {
+            &table.machine
+        } else {
+            &table.typical_machine
+        };
         let (has, needs) = match kind {
             SystemKind::GroundSource => ("air", "brine or water"),
             _ => ("brine or water", "air"),
         };
         check.refuse(
             &span_of(leaf),
-            format!("a machine that draws on {has} in a table of kind \"{}\"", kind.word()),
+            format!(
+                "a machine that draws on {has} in a table of kind \"{}\"",
+                kind.word()
+            ),
             format!("a machine that draws on {needs}"),
             "name another machine or change kind",
         );

@@ -106,10 +106,12 @@ impl crate::document::LeafValue for StoreVolume {
     fn read(value: &toml::Value) -> Result<Self, crate::units::UnitProblem> {
         match value.as_str() {
             Some("none") => Ok(Self::None),
-            _ => WaterVolume::read(value).map(Self::Of).map_err(|mut problem| {
-                problem.allowed.push_str(", or \"none\"");
-                problem
-            }),
+            _ => WaterVolume::read(value)
+                .map(Self::Of)
+                .map_err(|mut problem| {
+                    problem.allowed.push_str(", or \"none\"");
+                    problem
+                }),
         }
     }
 
@@ -238,7 +240,10 @@ pub(super) enum SystemKind {
 impl SystemKind {
     /// Its word in brief and results.
     pub fn word(self) -> &'static str {
-        Self::WORDS.iter().find(|(_, kind)| *kind == self).map_or("", |(word, _)| word)
+        Self::WORDS
+            .iter()
+            .find(|(_, kind)| *kind == self)
+            .map_or("", |(word, _)| word)
     }
 }
 

@@ -45,8 +45,18 @@ pub(super) fn contender(
     notes: &mut Notes,
 ) -> Option<Made> {
     let header = if around.today { "today" } else { "choice" };
-    let label = check.required(&table.label, &table.span(), &format!("{header}.label"), "\"Air source\"");
-    let kind = check.required(&table.kind, &table.span(), &format!("{header}.kind"), "\"air-source\"");
+    let label = check.required(
+        &table.label,
+        &table.span(),
+        &format!("{header}.label"),
+        "\"Air source\"",
+    );
+    let kind = check.required(
+        &table.kind,
+        &table.span(),
+        &format!("{header}.kind"),
+        "\"air-source\"",
+    );
     let kind = kind.map(|(kind,)| kind);
     let warm = warm_side(around.home, table, kind, around.facts, check, notes);
     let keeps_gas = check.value(&table.keeps_gas);
@@ -62,26 +72,47 @@ pub(super) fn contender(
     };
     let burns_gas = kind == SystemKind::GasBoiler;
     if burns_gas && around.energy.is_some_and(|energy| energy.gas.is_none()) {
-        check.missing(&table.span(), "energy.gas", "\"../tariffs/flat_gas.toml\", which a gas boiler needs");
+        check.missing(
+            &table.span(),
+            "energy.gas",
+            "\"../tariffs/flat_gas.toml\", which a gas boiler needs",
+        );
     }
     let (heating, made) = heating?;
     let (warm, label, energy, site) = (warm?, label?, around.energy?, around.site?);
-    let gas = if burns_gas || keeps_gas.unwrap_or(false) { energy.gas.as_ref() } else { None };
+    let gas = if burns_gas || keeps_gas.unwrap_or(false) {
+        energy.gas.as_ref()
+    } else {
+        None
+    };
     if burns_gas && gas.is_none() {
         return None;
     }
-    let band_k = parse::<TemperatureDifference>(defaults::BACKUP_BAND.value).ok()?.k();
+    let band_k = parse::<TemperatureDifference>(defaults::BACKUP_BAND.value)
+        .ok()?
+        .k();
     if matches!(heating, Heating::HeatPump(_)) {
         notes.used(&defaults::BACKUP_BAND);
     }
     let fuel_signal = gas.filter(|_| burns_gas).map(|gas| gas.signal.clone());
-    let plan = steady(site.outdoor_c.len(), warm.indoor_c, band_k, energy.electricity.signal.clone(), fuel_signal);
-    let (machine, findings) = made.map_or((None, Vec::new()), |made| (Some(made.label), made.findings));
+    let plan = steady(
+        site.outdoor_c.len(),
+        warm.indoor_c,
+        band_k,
+        energy.electricity.signal.clone(),
+        fuel_signal,
+    );
+    let (machine, findings) =
+        made.map_or((None, Vec::new()), |made| (Some(made.label), made.findings));
     Some(Made {
         contender: Contender {
             kind: kind.word(),
             today: around.today,
-            system: System { label, home: warm.home, heating },
+            system: System {
+                label,
+                home: warm.home,
+                heating,
+            },
             plan,
             electricity: energy.electricity.account.clone(),
             fuel: gas.map(|Supply { account, .. }| account.clone()),
@@ -95,9 +126,14 @@ pub(super) fn contender(
 }
 
 /// Money for the parts; nothing when it is wrong, nothing inside when it is not given.
-#[allow(clippy::option_option, reason = "outer: could not be read; inner: not given")]
+#[allow(
+    clippy::option_option,
+    reason = "outer: could not be read; inner: not given"
+)]
 fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> Option<Option<f64>> {
-    let Some(leaf) = &table.capital else { return Some(None) };
+    let Some(leaf) = &table.capital else {
+        return Some(None);
+    };
     let text = check.value(&table.capital)?;
     let money = match Money::parse(&text) {
         Ok(money) => money,
@@ -120,7 +156,12 @@ fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> O
 }
 
 fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<Heating> {
-    let output = notes.quantity(check, &table.output, &bounds::OUTPUT_KW, &defaults::BOILER_OUTPUT);
+    let output = notes.quantity(
+        check,
+        &table.output,
+        &bounds::OUTPUT_KW,
+        &defaults::BOILER_OUTPUT,
+    );
     let fixed_flow = check.within(&table.fixed_flow, &bounds::FLOW_C);
     if let (Some(leaf), Some(_)) = (&table.efficiency, &table.field_factor) {
         check.refuse(
@@ -134,8 +175,15 @@ fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<H
     let efficiency = if table.efficiency.is_some() {
         BoilerEfficiency::Seasonal(check.value(&table.efficiency)?)
     } else {
-        let factor = notes.quantity(check, &table.field_factor, &bounds::FIELD_FACTOR, &defaults::BOILER_FIELD_FACTOR);
-        BoilerEfficiency::FollowingReturn { field_factor: factor?.fraction() }
+        let factor = notes.quantity(
+            check,
+            &table.field_factor,
+            &bounds::FIELD_FACTOR,
+            &defaults::BOILER_FIELD_FACTOR,
+        );
+        BoilerEfficiency::FollowingReturn {
+            field_factor: factor?.fraction(),
+        }
     };
     Some(Heating::Boiler {
         boiler: Boiler::new(output?.kw(), efficiency),
@@ -146,7 +194,9 @@ fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<H
 fn direct_electric(table: &Section<SystemTable>, check: &mut Check) -> Option<Heating> {
     check.required(&table.output, &table.span(), "output", "\"8 kW\"");
     let output = check.within(&table.output, &bounds::OUTPUT_KW)?;
-    Some(Heating::DirectElectric { output_kw: output.kw() })
+    Some(Heating::DirectElectric {
+        output_kw: output.kw(),
+    })
 }
 
 fn heat_pump(
@@ -158,8 +208,18 @@ fn heat_pump(
     notes: &mut Notes,
 ) -> Option<(Heating, Option<MachineMade>)> {
     let backup = notes.quantity(check, &table.backup, &bounds::HEATER_KW, &defaults::BACKUP);
-    let immersion = notes.quantity(check, &table.immersion, &bounds::HEATER_KW, &defaults::IMMERSION);
-    let pump = notes.quantity(check, &table.circulation_pump, &bounds::AUXILIARY_KW, &defaults::CIRCULATION_PUMP);
+    let immersion = notes.quantity(
+        check,
+        &table.immersion,
+        &bounds::HEATER_KW,
+        &defaults::IMMERSION,
+    );
+    let pump = notes.quantity(
+        check,
+        &table.circulation_pump,
+        &bounds::AUXILIARY_KW,
+        &defaults::CIRCULATION_PUMP,
+    );
     let source = match kind {
         SystemKind::GroundSource => ground(table, around, check, notes).map(Source::Ground),
         _ => Some(Source::OutdoorAir),
@@ -184,7 +244,12 @@ fn ground(
     check: &mut Check,
     notes: &mut Notes,
 ) -> Option<GroundLoop> {
-    let depth = notes.quantity(check, &table.loop_depth, &bounds::TRENCH_DEPTH_M, &defaults::LOOP_DEPTH);
+    let depth = notes.quantity(
+        check,
+        &table.loop_depth,
+        &bounds::TRENCH_DEPTH_M,
+        &defaults::LOOP_DEPTH,
+    );
     let diffusivity = notes.quantity(
         check,
         &table.soil_diffusivity,
@@ -209,14 +274,21 @@ fn ground(
         return None;
     };
     let (depth_m, diffusivity) = (depth?.m(), diffusivity?.m2_per_s());
-    let undisturbed_c =
-        (0..outdoor_c.len()).map(|hour| undisturbed_c(&wave, depth_m, diffusivity, hour as f64)).collect();
+    let undisturbed_c = (0..outdoor_c.len())
+        .map(|hour| undisturbed_c(&wave, depth_m, diffusivity, hour as f64))
+        .collect();
     notes.add(
         "undisturbed ground",
-        format!("mean {:.1} °C, swing {:.1} K at the surface", wave.mean_c, wave.amplitude_k),
+        format!(
+            "mean {:.1} °C, swing {:.1} K at the surface",
+            wave.mean_c, wave.amplitude_k
+        ),
         "annual wave of the weather file carried down by Kusuda and Achenbach 1965",
     );
-    Some(GroundLoop { undisturbed_c, resistance_k_per_kw: resistance?.k_per_kw() })
+    Some(GroundLoop {
+        undisturbed_c,
+        resistance_k_per_kw: resistance?.k_per_kw(),
+    })
 }
 
 /// A field's name and its place, where the field is given.
@@ -257,9 +329,16 @@ fn only_its_own_fields(table: &SystemTable, kind: SystemKind, check: &mut Check)
         (
             kind == SystemKind::GasBoiler,
             "a boiler",
-            vec![given("efficiency", &table.efficiency), given("fixed_flow", &table.fixed_flow)],
+            vec![
+                given("efficiency", &table.efficiency),
+                given("fixed_flow", &table.fixed_flow),
+            ],
         ),
-        (!is_machine, "a boiler or an electric heater", vec![given("output", &table.output)]),
+        (
+            !is_machine,
+            "a boiler or an electric heater",
+            vec![given("output", &table.output)],
+        ),
     ];
     for (belongs, owner, fields) in groups {
         for (name, span) in fields {

@@ -99,9 +99,18 @@ impl Emitters {
     pub fn with_design_flow(&self, flow_c: f64, room_c: f64) -> Self {
         /// Return water stays at least this much above the room, K.
         const LEAST_EXCESS_K: f64 = 1.0;
-        let return_c = (flow_c - self.design_spread_k).max(room_c + LEAST_EXCESS_K).min(flow_c);
+        let return_c = (flow_c - self.design_spread_k)
+            .max(room_c + LEAST_EXCESS_K)
+            .min(flow_c);
         let greatest_flow_c = flow_c + (self.greatest_flow_c - self.design_flow_c);
-        Self::new(self.kind, self.design_load_kw, flow_c, return_c, room_c, greatest_flow_c)
+        Self::new(
+            self.kind,
+            self.design_load_kw,
+            flow_c,
+            return_c,
+            room_c,
+            greatest_flow_c,
+        )
     }
 
     /// Flow temperature that is never exceeded, °C.

@@ -46,9 +46,16 @@ struct Surplus<'a> {
 impl Surplus<'_> {
     fn at(&self, outdoor_c: f64) -> f64 {
         let home = &self.system.home;
-        let load_kw = home.fabric.design_load_kw(self.indoor_c, outdoor_c).max(0.0);
+        let load_kw = home
+            .fabric
+            .design_load_kw(self.indoor_c, outdoor_c)
+            .max(0.0);
         let cold = match &self.machine.source {
-            Source::OutdoorAir => ColdSide { open_c: outdoor_c, k_per_kw: 0.0, relative_humidity: None },
+            Source::OutdoorAir => ColdSide {
+                open_c: outdoor_c,
+                k_per_kw: 0.0,
+                relative_humidity: None,
+            },
             // A cold night meets the ground at its coldest.
             Source::Ground(ground) => ColdSide {
                 open_c: self.machine.source.lowest_c(&[]),
@@ -80,9 +87,22 @@ pub fn balance_point(
     indoor_c: f64,
     with_hot_water: bool,
 ) -> Option<BalancePoint> {
-    let daily_kwh = system.home.hot_water.as_ref().map_or(0.0, |water| water.daily_kwh);
-    let water_kw = if with_hot_water { daily_kwh / 24.0 } else { 0.0 };
-    let surplus = Surplus { system, machine, indoor_c, water_kw };
+    let daily_kwh = system
+        .home
+        .hot_water
+        .as_ref()
+        .map_or(0.0, |water| water.daily_kwh);
+    let water_kw = if with_hot_water {
+        daily_kwh / 24.0
+    } else {
+        0.0
+    };
+    let surplus = Surplus {
+        system,
+        machine,
+        indoor_c,
+        water_kw,
+    };
     let (low_c, high_c) = RANGE_C;
     if surplus.at(low_c) >= 0.0 {
         return Some(BalancePoint::BelowRange(low_c));

@@ -62,7 +62,10 @@ impl Case {
     /// # Errors
     /// When a bill cannot be made, such as a missing hourly price.
     pub fn run(&self) -> Result<Vec<Outcome>, Problems> {
-        self.contenders.iter().map(|contender| self.run_one(contender, None)).collect()
+        self.contenders
+            .iter()
+            .map(|contender| self.run_one(contender, None))
+            .collect()
     }
 
     /// Runs one system through every year, keeping its rows in a ledger where one is given.
@@ -88,9 +91,16 @@ impl Case {
             run(site, system, plan, hours.clone(), &mut state, &mut sink);
             years.push(YearOutcome::new(*year, &totals));
         }
-        let Metered { electricity, fuel, .. } = metered;
+        let Metered {
+            electricity, fuel, ..
+        } = metered;
         let costs = price(contender, &site.years, &electricity, fuel.as_ref())?;
-        Ok(Outcome { years, electricity, fuel, costs })
+        Ok(Outcome {
+            years,
+            electricity,
+            fuel,
+            costs,
+        })
     }
 }
 

@@ -41,7 +41,12 @@ impl Lever {
             Self::FlowTemperature => ("design flow temperature", 35.0, 65.0, "°C"),
             Self::FieldFactor => ("share of laboratory performance kept", 0.6, 1.0, ""),
         };
-        Bound { label, low, high, unit }
+        Bound {
+            label,
+            low,
+            high,
+            unit,
+        }
     }
 
     /// Where it stands now for a choice; nothing where the choice has no such quantity.
@@ -77,7 +82,12 @@ impl Lever {
             Self::FuelRate => {
                 for contender in &mut case.contenders {
                     contender.fuel = contender.fuel.as_ref().map(|fuel| scaled(fuel, value));
-                    for price in contender.plan.fuel.iter_mut().flat_map(|fuel| &mut fuel.price) {
+                    for price in contender
+                        .plan
+                        .fuel
+                        .iter_mut()
+                        .flat_map(|fuel| &mut fuel.price)
+                    {
                         *price *= value;
                     }
                 }

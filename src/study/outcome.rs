@@ -112,8 +112,15 @@ pub(super) fn price(
     electricity: &Reading,
     fuel: Option<&Reading>,
 ) -> Result<Costs, Problems> {
-    let mut costs = Costs { by_year: vec![0.0; years.len()], ..Costs::default() };
-    add(&mut costs, years, &bill(contender, &contender.electricity, electricity)?);
+    let mut costs = Costs {
+        by_year: vec![0.0; years.len()],
+        ..Costs::default()
+    };
+    add(
+        &mut costs,
+        years,
+        &bill(contender, &contender.electricity, electricity)?,
+    );
     if let (Some(account), Some(reading)) = (&contender.fuel, fuel) {
         add(&mut costs, years, &bill(contender, account, reading)?);
     }
@@ -121,7 +128,12 @@ pub(super) fn price(
 }
 
 fn bill(contender: &Contender, account: &Account, reading: &Reading) -> Result<Bill, Problems> {
-    price_reading(&account.tariff, &account.meter, reading, contender.connection())
+    price_reading(
+        &account.tariff,
+        &account.meter,
+        reading,
+        contender.connection(),
+    )
 }
 
 /// Decimal amounts of a household are far inside what an `f64` holds exactly to the cent.
@@ -138,7 +150,9 @@ fn add(costs: &mut Costs, years: &[(i32, Range<usize>)], bill: &Bill) {
     for month in &bill.months {
         costs.months[month.month0] += number(month.amount) / count;
         // A few hours of a UTC year can fall into the civil year beside it: they stay with their weather year.
-        let place = years.partition_point(|(year, _)| *year < month.year).min(years.len() - 1);
+        let place = years
+            .partition_point(|(year, _)| *year < month.year)
+            .min(years.len() - 1);
         costs.by_year[place] += number(month.amount);
     }
 }
