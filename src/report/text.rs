@@ -24,7 +24,11 @@ pub fn estimate_text(estimate: &Estimate) -> String {
         let systems: Vec<_> = today.iter().chain(group).copied().collect();
         let _ = writeln!(text, "{}\n", table(&systems, &estimate.currency));
     }
-    let _ = writeln!(text, "What would change it");
+    let lines = home_lines(estimate);
+    if !lines.is_empty() {
+        let _ = writeln!(text, "The home\n{}", lines.join("\n"));
+    }
+    let _ = writeln!(text, "\nWhat would change it");
     for answers in estimate.break_even.values() {
         for answer in answers {
             let _ = writeln!(text, "  {}", answer.sentence);
@@ -77,6 +81,70 @@ fn heading(estimate: &Estimate) -> String {
     )
 }
 
+/// Design point, rooms, store, running pattern and meter readings in sentences.
+fn home_lines(estimate: &Estimate) -> Vec<String> {
+    let mut lines = Vec::new();
+    if let (Some(transmission), Some(ventilation)) = (
+        estimate.home.transmission_w_per_k,
+        estimate.home.ventilation_w_per_k,
+    ) {
+        lines.push(format!(
+            "  heat loss: {transmission:.0} W/K through the fabric, {ventilation:.0} W/K with the air"
+        ));
+    }
+    lines.extend(
+        estimate
+            .home
+            .metered
+            .iter()
+            .map(|metered| format!("  {}", metered.sentence)),
+    );
+    for system in &estimate.systems {
+        let label = &system.label;
+        lines.push(format!("  {label}: {}", system.pattern));
+        if let (Some(heat), Some(cost)) = (system.pattern_heat_kwh, system.pattern_cost) {
+            lines.push(format!(
+                "    against today's pattern {heat:+.0} kWh of heat and {cost:+.2} {}",
+                estimate.currency
+            ));
+        }
+        lines.push(format!(
+            "    {}; {:.1} L of water a minute",
+            system.design.sentence, system.design.water_l_per_min
+        ));
+        lines.extend(
+            system
+                .rooms
+                .iter()
+                .map(|rooms| format!("    {}", rooms.sentence)),
+        );
+        if let Some(store) = &system.store {
+            let reheat = store
+                .reheat_hours
+                .map_or(String::new(), |hours| format!(", {hours:.1} h to reheat"));
+            lines.push(format!(
+                "    store of {:.0} L: {:.0} L at {:.0} °C when full{reheat}",
+                store.volume_l, store.usable_l, store.drawn_at_c
+            ));
+        }
+    }
+    for comparison in &estimate.patterns {
+        let (all_day, set_back) = (&comparison.continuous, &comparison.set_back);
+        lines.push(format!(
+            "  {}, {} against {}: {:+.1} % heat, {:+.2} {}, lowest {:.1} against {:.1} °C",
+            comparison.label,
+            all_day.pattern,
+            set_back.pattern,
+            comparison.more_heat_percent,
+            all_day.cost - set_back.cost,
+            estimate.currency,
+            all_day.min_indoor_c,
+            set_back.min_indoor_c
+        ));
+    }
+    lines
+}
+
 /// A figure's name and how it is written for a system; nothing where there is no such figure.
 type Line = (&'static str, fn(&SystemAnswer) -> Option<String>);
 
@@ -93,6 +161,9 @@ const LINES: &[Line] = &[
     ("Carbon, kg CO2e", |s| Some(format!("{:.0}", s.carbon_kg))),
     ("Heat to rooms, kWh", |s| {
         Some(format!("{:.0}", s.space_heat_kwh))
+    }),
+    ("  by another pattern than today", |s| {
+        s.pattern_heat_kwh.map(|kwh| format!("{kwh:+.0}"))
     }),
     ("Heat to hot water, kWh", |s| {
         Some(format!("{:.0}", s.hot_water_kwh))
@@ -125,6 +196,9 @@ const LINES: &[Line] = &[
     }),
     ("Hours short of heat", |s| {
         Some(format!("{:.0}", s.hours_short))
+    }),
+    ("Hours short of hot water", |s| {
+        (s.hours_water_short >= 0.5).then(|| format!("{:.0}", s.hours_water_short))
     }),
     ("Coldest indoors", |s| {
         Some(format!("{:.1} °C", s.min_indoor_c))

@@ -43,6 +43,23 @@ struct Surplus<'a> {
     water_kw: f64,
 }
 
+/// What a machine's source offers on a day of an outdoor temperature (°C).
+pub(super) fn cold_side(machine: &MachineSystem, outdoor_c: f64) -> ColdSide {
+    match &machine.source {
+        Source::OutdoorAir => ColdSide {
+            open_c: outdoor_c,
+            k_per_kw: 0.0,
+            relative_humidity: None,
+        },
+        // A cold night meets the ground at its coldest.
+        Source::Ground(ground) => ColdSide {
+            open_c: machine.source.lowest_c(&[]),
+            k_per_kw: ground.resistance_k_per_kw,
+            relative_humidity: None,
+        },
+    }
+}
+
 impl Surplus<'_> {
     fn at(&self, outdoor_c: f64) -> f64 {
         let home = &self.system.home;
@@ -50,20 +67,9 @@ impl Surplus<'_> {
             .fabric
             .design_load_kw(self.indoor_c, outdoor_c)
             .max(0.0);
-        let cold = match &self.machine.source {
-            Source::OutdoorAir => ColdSide {
-                open_c: outdoor_c,
-                k_per_kw: 0.0,
-                relative_humidity: None,
-            },
-            // A cold night meets the ground at its coldest.
-            Source::Ground(ground) => ColdSide {
-                open_c: self.machine.source.lowest_c(&[]),
-                k_per_kw: ground.resistance_k_per_kw,
-                relative_humidity: None,
-            },
-        };
-        let flow_c = home.emitters.at_load(load_kw, self.indoor_c).flow_c;
+        let cold = cold_side(self.machine, outdoor_c);
+        let flow_c =
+            home.emitters.at_load(load_kw, self.indoor_c).flow_c + home.emitters.header_k();
         self.machine.machine.greatest_output_kw(&cold, flow_c) - load_kw - self.water_kw
     }
 }
@@ -91,7 +97,7 @@ pub fn balance_point(
         .home
         .hot_water
         .as_ref()
-        .map_or(0.0, |water| water.daily_kwh);
+        .map_or(0.0, |water| water.mean_daily_kwh());
     let water_kw = if with_hot_water {
         daily_kwh / 24.0
     } else {

@@ -6,6 +6,8 @@ use chrono_tz::Tz;
 
 use super::outcome::{Outcome, YearOutcome, price};
 use crate::bill::Connection;
+use crate::home::Pattern;
+use crate::plan::Ability;
 use crate::problem::Problems;
 use crate::tariff::{Meter, Tariff};
 use crate::units::Currency;
@@ -52,8 +54,16 @@ pub struct Contender {
     pub indoor_c: f64,
     /// Design outdoor temperature, °C.
     pub design_outdoor_c: f64,
+    /// Design heat load, kW; it stays when the heat loss is scaled to meter readings.
+    pub design_load_kw: f64,
+    /// When the rooms are heated.
+    pub pattern: Pattern,
+    /// What a warm-up can count on.
+    pub ability: Ability,
     /// What it costs to put in, in the case's currency.
     pub capital: Option<f64>,
+    /// The same part by part, where it is given so.
+    pub capital_parts: Vec<(String, f64)>,
 }
 
 impl Case {

@@ -3,11 +3,15 @@
 mod balance;
 mod break_even;
 mod case;
+mod design;
 mod lever;
 mod outcome;
+mod running;
 
 pub use balance::{BalancePoint, balance_point};
 pub use break_even::{BreakEven, Crossing, break_even};
 pub use case::{Account, Case, Contender};
+pub use design::{DesignPoint, design_point};
 pub use lever::Lever;
 pub use outcome::{Costs, Outcome, YearOutcome};
+pub use running::{scale_to_fuel, under_pattern};

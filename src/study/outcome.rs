@@ -47,6 +47,8 @@ pub struct YearOutcome {
     pub hours_backup: u32,
     /// Hours that ended short of heat.
     pub hours_short: u32,
+    /// Hours in which hot water came out too cool.
+    pub hours_water_short: u32,
 }
 
 impl YearOutcome {
@@ -60,6 +62,7 @@ impl YearOutcome {
             peak_electric_kw: totals.peak_electric_kw,
             hours_backup: totals.hours_backup,
             hours_short: totals.hours_short,
+            hours_water_short: totals.hours_water_short,
         }
     }
 }

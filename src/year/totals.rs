@@ -19,6 +19,8 @@ pub struct Totals<'a> {
     pub hours_backup: u32,
     /// Hours that ended short of heat.
     pub hours_short: u32,
+    /// Hours in which hot water came out too cool.
+    pub hours_water_short: u32,
 }
 
 impl<'a> Totals<'a> {
@@ -32,6 +34,7 @@ impl<'a> Totals<'a> {
             peak_electric_kw: 0.0,
             hours_backup: 0,
             hours_short: 0,
+            hours_water_short: 0,
         }
     }
 
@@ -54,5 +57,6 @@ impl Sink for Totals<'_> {
         let backed = row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION);
         self.hours_backup += u32::from(backed);
         self.hours_short += u32::from(row.flags.has(Flags::SHORT));
+        self.hours_water_short += u32::from(row.flags.has(Flags::WATER_SHORT));
     }
 }
