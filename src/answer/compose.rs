@@ -58,6 +58,8 @@ pub struct BillsTold {
 /// When a case cannot be run with a lever moved.
 pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimate, Problems> {
     let mut findings = told.findings.clone();
+    findings.extend(cool_stores(case));
+    findings.extend(hygiene_cycles(case));
     let mut systems = Vec::with_capacity(outcomes.len());
     let mut break_evens = BTreeMap::new();
     for (i, (contender, outcome)) in case.contenders.iter().zip(outcomes).enumerate() {
@@ -74,7 +76,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
             system.pattern_heat_kwh = Some(system.space_heat_kwh - heat_kwh);
             system.pattern_cost = Some(system.cost - as_today.costs.total);
         }
-        findings.extend(cautions(&system, contender));
+        findings.extend(shortfalls(&system));
         if i > 0 {
             let levers = [
                 Lever::ElectricityRate,
@@ -235,12 +237,12 @@ fn balance_words(point: BalancePoint) -> String {
     }
 }
 
-/// What someone could be hurt or left cold by.
-fn cautions(system: &SystemAnswer, contender: &Contender) -> Vec<Finding> {
-    let mut cautions = Vec::new();
+/// What a system leaves cold: rooms, taps, the design day.
+fn shortfalls(system: &SystemAnswer) -> Vec<Finding> {
     let label = &system.label;
+    let mut found = Vec::new();
     if system.hours_short >= 0.5 {
-        cautions.push(Finding::new(
+        found.push(Finding::new(
             Severity::Caution,
             format!(
                 "\"{label}\" leaves the rooms more than 1 K below the set point in {:.0} hours a year, down to {:.1} °C",
@@ -249,50 +251,106 @@ fn cautions(system: &SystemAnswer, contender: &Contender) -> Vec<Finding> {
             "a larger machine, backup heat or larger emitters would be needed; size from a room-by-room heat-loss calculation by a competent person",
         ));
     }
-    let store = contender
-        .system
-        .home
-        .hot_water
-        .as_ref()
-        .and_then(|water| water.store);
-    /// UK HSE guidance: stored hot water at 60 °C, arriving at the taps at no less than 50 °C within a minute.
-    const HYGIENE_C: f64 = 60.0;
-    if let Some(store) = store {
-        let set_point_c = store.set_point_c;
-        let hygiene = store.hygiene.filter(|cycle| cycle.target_c >= HYGIENE_C);
-        match hygiene {
-            None if set_point_c < HYGIENE_C => cautions.push(Finding::new(
-                Severity::Caution,
-                format!("\"{label}\" keeps hot water at {set_point_c:.0} °C"),
-                "below 60 °C legionella can grow: a regular hygiene cycle is usual, and water above 50 °C scalds; follow local rules and a licensed installer",
-            )),
-            Some(cycle) => cautions.push(Finding::new(
-                Severity::Caution,
-                format!("\"{label}\" heats its store to {:.0} °C once a week", cycle.target_c),
-                "water above 50 °C scalds: mixing valves at the taps; how often and how hot is for local rules and a licensed installer to say",
-            )),
-            None => {}
-        }
-    }
     if system.hours_water_short >= 0.5 {
-        cautions.push(Finding::new(
+        found.push(Finding::new(
             Severity::Warning,
             format!("\"{label}\" gives hot water that is too cool in {:.0} hours a year", system.hours_water_short),
             "a larger store, a higher set point, longer reheat windows or more output would be needed",
         ));
     }
     if !system.design.covered {
-        cautions.push(Finding::new(
+        found.push(Finding::new(
             Severity::Caution,
             format!("\"{label}\": {}", system.design.sentence),
             "size from a room-by-room heat-loss calculation by a competent person",
         ));
     }
-    cautions
+    found
+}
+
+/// Stored hot water below the temperature of UK HSE guidance: 60 °C in the store, at the taps no less than 50 °C within a minute.
+fn cool_stores(case: &Case) -> Option<Finding> {
+    const HYGIENE_C: f64 = 60.0;
+    let cool: Vec<_> = case
+        .contenders
+        .iter()
+        .filter(|contender| {
+            let store = contender
+                .system
+                .home
+                .hot_water
+                .as_ref()
+                .and_then(|water| water.store);
+            store.is_some_and(|store| {
+                let cycle_c = store.hygiene.map_or(0.0, |cycle| cycle.target_c);
+                store.set_point_c < HYGIENE_C && cycle_c < HYGIENE_C
+            })
+        })
+        .map(|contender| format!("\"{}\"", contender.system.label))
+        .collect();
+    (!cool.is_empty()).then(|| {
+        Finding::new(
+            Severity::Caution,
+            format!("hot water is stored below {HYGIENE_C:.0} °C by {}", cool.join(", ")),
+            "legionella can grow there, so a regular hygiene cycle is usual, and water above 50 °C scalds; follow local rules and a licensed installer",
+        )
+    })
+}
+
+/// Stores that are made hot against legionella: the water scalds then.
+fn hygiene_cycles(case: &Case) -> Option<Finding> {
+    let hot: Vec<_> = case
+        .contenders
+        .iter()
+        .filter_map(|contender| {
+            let cycle = contender.system.home.hot_water.as_ref()?.store?.hygiene?;
+            Some(format!(
+                "\"{}\" to {:.0} °C",
+                contender.system.label, cycle.target_c
+            ))
+        })
+        .collect();
+    (!hot.is_empty()).then(|| {
+        Finding::new(
+            Severity::Caution,
+            format!("the hot-water store is heated once a week by {}", hot.join(", ")),
+            "water above 50 °C scalds: mixing valves at the taps; how often and how hot is for local rules and a licensed installer to say",
+        )
+    })
 }
 
 fn lever_answer(found: &BreakEven, label: &str) -> LeverAnswer {
     let bound = found.lever.bound();
+    let conditions: Vec<_> = found
+        .crossings
+        .iter()
+        .map(|crossing| condition(found, crossing.value))
+        .collect();
+    let sentence = match conditions.as_slice() {
+        [] => format!(
+            "No {} makes \"{label}\" cost what today's system costs.",
+            bound.words()
+        ),
+        _ => {
+            let sides = found
+                .crossings
+                .iter()
+                .zip(&conditions)
+                .map(|(crossing, condition)| {
+                    let side = if crossing.cheaper_above {
+                        "above"
+                    } else {
+                        "below"
+                    };
+                    format!("{condition}; {side} that it is the cheaper one")
+                });
+            let sides: Vec<_> = sides.collect();
+            format!(
+                "\"{label}\" breaks even with {}.",
+                sides.join(", and again with ")
+            )
+        }
+    };
     LeverAnswer {
         lever: bound.label.to_owned(),
         unit: bound.unit.to_owned(),
@@ -303,45 +361,33 @@ fn lever_answer(found: &BreakEven, label: &str) -> LeverAnswer {
             .map(|crossing| crossing.value)
             .collect(),
         between: [bound.low, bound.high],
-        sentence: sentence(found, label),
+        conditions,
+        sentence,
     }
 }
 
-fn sentence(found: &BreakEven, label: &str) -> String {
-    let bound = found.lever.bound();
-    let amount = |value: f64| match found.lever {
-        Lever::ElectricityRate | Lever::FuelRate | Lever::HeatLoss => {
-            let percent = (value - 1.0) * 100.0;
-            if percent >= 0.0 {
-                format!("{percent:.0} % higher than now")
-            } else {
-                format!("{:.0} % lower than now", -percent)
-            }
-        }
-        Lever::FlowTemperature => format!("{value:.0} °C (now {:.0} °C)", found.now),
-        Lever::FieldFactor => format!("{value:.2} (now {:.2})", found.now),
+/// A value of a lever as it is said aloud.
+fn condition(found: &BreakEven, value: f64) -> String {
+    let compared = |what: &str, more: &str, less: &str| {
+        let percent = (value - 1.0) * 100.0;
+        format!(
+            "{what} {:.0} % {}",
+            percent.abs(),
+            if percent >= 0.0 { more } else { less }
+        )
     };
-    match found.crossings.as_slice() {
-        [] => format!(
-            "No {} between {} and {} {} makes \"{label}\" cost what today's system costs.",
-            bound.label, bound.low, bound.high, bound.unit
-        ),
-        crossings => {
-            let parts: Vec<_> = crossings
-                .iter()
-                .map(|crossing| {
-                    let side = if crossing.cheaper_above {
-                        "above"
-                    } else {
-                        "below"
-                    };
-                    format!("{} and is cheaper {side} it", amount(crossing.value))
-                })
-                .collect();
+    match found.lever {
+        Lever::ElectricityRate => compared("electricity", "dearer", "cheaper"),
+        Lever::FuelRate => compared("gas", "dearer", "cheaper"),
+        Lever::HeatLoss => compared("a heat loss", "larger", "smaller"),
+        Lever::FlowTemperature => {
+            format!("a design flow of {value:.0} °C (now {:.0} °C)", found.now)
+        }
+        Lever::FieldFactor => {
+            let percent = value * 100.0;
             format!(
-                "\"{label}\" breaks even at a {} of {}.",
-                bound.label,
-                parts.join("; and again at ")
+                "{percent:.0} % of laboratory performance (now {:.0} %)",
+                found.now * 100.0
             )
         }
     }

@@ -12,7 +12,6 @@ macro_rules! embedded {
 embedded![
     "briefs/terrace.toml",
     "briefs/machines/air-r290-small.toml",
-    "briefs/machines/ground-r410a.toml",
     "tariffs/flat_electricity.toml",
     "tariffs/flat_gas.toml",
     "weather_samples/morvane_sound.csv",

@@ -11,6 +11,7 @@ use crate::bounds;
 use crate::document::{Check, Leaf, Section};
 use crate::heatpump::{HeatPump, Sheet, SourceKind, fit};
 use crate::problem::{Finding, Problem, Problems, Severity};
+use crate::refrigerant::Refrigerant;
 use crate::units::{Power, Temperature, parse};
 
 /// A fitted machine and what there is to tell about it.
@@ -52,6 +53,14 @@ pub(super) fn machine(
         );
         return None;
     }
+    if let (Some(_), Some(leaf)) = (&table.machine, &table.rated_output) {
+        check.refuse(
+            &leaf.span(),
+            "rated_output beside machine",
+            "the size that the machine sheet tells",
+            "remove it; only a typical machine can be scaled",
+        );
+    }
     let sheet = if table.machine.is_some() {
         let path = check.value(&table.machine)?;
         let text = check.take(folder.text(&path))?;
@@ -65,7 +74,7 @@ pub(super) fn machine(
     source_agrees(table, kind, &sheet, check)?;
     let fitted = check.take(fit(&sheet))?;
     let scaled = match rated_output {
-        Some(output) if table.rated_cop.is_none() => fitted.heat_pump.scaled_to(output.kw()),
+        Some(output) if table.typical_machine.is_some() => fitted.heat_pump.scaled_to(output.kw()),
         _ => fitted.heat_pump.clone(),
     };
     let machine = scaled.with_field_factor(factor?.fraction());
@@ -137,6 +146,18 @@ fn one_point(
         check.missing(&span, "rated_output", "\"6 kW\"");
     }
     let refrigerant = check.required(&table.refrigerant, &span, "refrigerant", "\"R290\"");
+    let refrigerant = refrigerant.filter(|name| {
+        let held = name.parse::<Refrigerant>();
+        if let Err(unknown) = &held {
+            check.refuse(
+                &span_of(&table.refrigerant),
+                unknown.to_string(),
+                Refrigerant::names(),
+                "",
+            );
+        }
+        held.is_ok()
+    });
     let cop = check.plain_within(&table.rated_cop, &bounds::COP);
     let default = match kind {
         SystemKind::GroundSource => defaults::RATED_AT_GROUND,

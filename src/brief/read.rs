@@ -81,30 +81,17 @@ impl Brief {
 /// Builds what can be built and checks everything else all the same, so that no problem waits for another to be mended.
 fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> {
     let mut notes = Notes::default();
-    let start = 0..0;
     if raw.home.is_none() {
-        check.missing(&start, "home", "a table [home] with heat_loss and emitters");
+        check.missing_table("[home]", "heat_loss, and a table [home.emitters] with flow");
     }
     if raw.today.is_none() {
-        check.missing(
-            &start,
-            "today",
-            "a table [today] with kind = \"gas-boiler\"",
-        );
+        check.missing_table("[today]", "label and kind = \"gas-boiler\"");
     }
     if raw.choice.is_empty() {
-        check.missing(
-            &start,
-            "choice",
-            "at least one table [[choice]] with kind = \"air-source\"",
-        );
+        check.missing_table("[[choice]]", "label, kind = \"air-source\" and machine");
     }
     if raw.energy.is_none() {
-        check.missing(
-            &start,
-            "energy",
-            "a table [energy] with electricity and gas tariffs",
-        );
+        check.missing_table("[energy]", "electricity and gas, the files of the tariffs");
     }
     let label = raw.home.as_ref().and_then(|home| check.value(&home.label));
     let zone = time_zone(raw.home.as_ref(), check, &mut notes);

@@ -17,11 +17,7 @@ pub(super) fn weather(
     check: &mut Check,
 ) -> Option<Weather> {
     let Some(table) = table else {
-        check.missing(
-            &(0..0),
-            "weather",
-            "a table [weather] with file = \"….csv\"",
-        );
+        check.missing_table("[weather]", "file = \"….csv\"");
         return None;
     };
     let before = check.problems().len();

@@ -7,7 +7,7 @@ use crate::answer::{Estimate, compare_patterns, compose};
 use crate::brief::{Brief, DEFAULTS};
 use crate::chart::{AnnualCost, Marks, SystemCost, annual_cost};
 use crate::home::Pattern;
-use crate::report::{estimate_text, ledger_csv};
+use crate::report::{estimate_text, home_text, ledger_csv, patterns_text};
 use crate::year::Ledger;
 
 /// Yearly cost and carbon of every system of a brief, beside what heats the home today.
@@ -31,6 +31,12 @@ pub struct Args {
     /// How to print the result.
     #[arg(long, value_enum, default_value_t)]
     format: Format,
+    /// Say where each assumption is from.
+    #[arg(long)]
+    assumptions: bool,
+    /// Also say each system's design point, rooms, store and running pattern.
+    #[arg(long)]
+    home: bool,
     /// Also run every system all day at its set point beside a set-back.
     #[arg(long)]
     patterns: bool,
@@ -89,8 +95,19 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     warn(&estimate.findings);
     match args.format {
         Format::Json => print_json(&estimate),
-        Format::Text => print(&estimate_text(&estimate)),
+        Format::Text => print(&text(&estimate, args)),
     }
+}
+
+fn text(estimate: &Estimate, args: &Args) -> String {
+    let mut text = estimate_text(estimate, args.assumptions);
+    if args.home {
+        text += &format!("\n\n{}", home_text(estimate));
+    }
+    if args.patterns {
+        text += &format!("\n\n{}", patterns_text(estimate));
+    }
+    text
 }
 
 /// A set-back for briefs that have none: 7 to 9 and 16 to 23 h on working days, 7 to 23 h at weekends, 20 °C and 16 °C between.
@@ -117,7 +134,7 @@ fn pictures(estimate: &Estimate, folder: &std::path::Path) -> Result<Vec<NewFile
                 today: system.today,
                 energy: system.cost_energy,
                 standing: system.cost_standing,
-                tax: system.cost_tax,
+                tax: system.cost_tax.unwrap_or(0.0),
             })
             .collect(),
     };

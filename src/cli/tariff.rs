@@ -269,7 +269,7 @@ fn tax(prices: &Prices) -> String {
             let names: Vec<_> = [
                 (covers.energy, "energy"),
                 (covers.standing, "standing charge"),
-                (covers.demand, "demand charge"),
+                (covers.demand && prices.demand.is_some(), "demand charge"),
             ]
             .iter()
             .filter(|(covered, _)| *covered)
@@ -335,25 +335,34 @@ fn clock_table(bands: &[Band], currency: Currency) -> String {
 
 fn bill_table(bill: &Bill) -> String {
     let mut table = plain_table(&["bill", "what", "quantity", "", "rate", bill.currency.code()]);
-    let mut before = None;
-    for line in &bill.lines {
-        let period = line.period.to_string();
-        let shown = if before == Some(line.period) {
-            ""
-        } else {
-            &period
-        };
-        before = Some(line.period);
+    let bills: Vec<_> = bill.lines.chunk_by(|a, b| a.period == b.period).collect();
+    for lines in &bills {
+        let mut period = lines
+            .first()
+            .map_or(String::new(), |line| line.period.to_string());
+        for line in *lines {
+            table.add_row([
+                &std::mem::take(&mut period),
+                &line.what,
+                &line.quantity.round_dp(2).to_string(),
+                &line.unit,
+                &rate(line, bill.currency),
+                &line.amount.to_string(),
+            ]);
+        }
+        let sum = lines.iter().map(|line| line.amount).sum();
         table.add_row([
-            shown,
-            &line.what,
-            &format!("{}", line.quantity.round_dp(2)),
-            &line.unit,
-            &rate(line, bill.currency),
-            &line.amount.to_string(),
+            "",
+            "to pay",
+            "",
+            "",
+            "",
+            &bill.currency.round(sum).to_string(),
         ]);
     }
-    table.add_row(["", "to pay", "", "", "", &bill.total().to_string()]);
+    if bills.len() > 1 {
+        table.add_row(["all", "to pay", "", "", "", &bill.total().to_string()]);
+    }
     align_right(&mut table, &[2, 4, 5]);
     table.to_string()
 }

@@ -14,13 +14,16 @@ const FROST_TOLERANCE: f64 = 1e-7;
 const MOST_FROST_STEPS: usize = 12;
 /// Error of the source temperature at which the balance with the offer ends, K.
 const DRAW_TOLERANCE_K: f64 = 1e-6;
-/// Most steps of that balance: bisection alone would take 30.
+/// Most steps of that balance: the last half of them halve the bracket, which is enough from any bracket in use.
 const MOST_DRAW_STEPS: usize = 80;
 /// Change of the running flow temperature below which its substitution ends, K, and the most substitutions.
 const RISE_TOLERANCE_K: f64 = 1e-5;
 const MOST_RISE_STEPS: usize = 30;
 /// Difference of wanted and greatest heat that is no shortfall, relative: rounding.
 const ENOUGH: f64 = 1e-9;
+
+/// Outdoor temperature above which no coil freezes, °C: it would take an approach of 25 K.
+const FROST_FREE_C: f64 = 15.0;
 
 /// What the cold side offers: the offer of a source.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -281,6 +284,8 @@ impl HeatPump {
     /// Humidity ratio of the outdoor air, or 0 where there is no outdoor coil.
     pub(super) fn moisture(&self, cold: &ColdSide) -> f64 {
         match self.core.source {
+            // Above this no coil is near freezing.
+            SourceKind::Air if cold.open_c > FROST_FREE_C => 0.0,
             SourceKind::Air => humidity_ratio(cold.open_c, cold.relative_humidity),
             SourceKind::Brine | SourceKind::Water => 0.0,
         }
@@ -320,11 +325,13 @@ impl HeatPump {
             steady = at(low);
             low_excess = excess(&steady);
         }
+        // The end that stays twice is weighted down (Illinois), so that both ends move.
+        let mut stayed = 0;
         for step in 0..MOST_DRAW_STEPS {
             if excess(&steady).abs() < DRAW_TOLERANCE_K || high - low < DRAW_TOLERANCE_K {
                 break;
             }
-            let middle = if step % 4 == 3 {
+            let middle = if step > MOST_DRAW_STEPS / 2 {
                 0.5 * (low + high)
             } else {
                 (low * high_excess - high * low_excess) / (high_excess - low_excess)
@@ -333,10 +340,16 @@ impl HeatPump {
             let found = excess(&steady);
             if found > 0.0 {
                 (high, high_excess) = (middle, found);
-                low_excess *= 0.5;
+                if stayed == 1 {
+                    low_excess *= 0.5;
+                }
+                stayed = 1;
             } else {
                 (low, low_excess) = (middle, found);
-                high_excess *= 0.5;
+                if stayed == -1 {
+                    high_excess *= 0.5;
+                }
+                stayed = -1;
             }
         }
         steady

@@ -10,12 +10,12 @@ use super::limits::{LEAST_DIFFERENCE_K, LOWEST_FLOW_C, Limits};
 use super::machine::SolveError;
 
 /// Fine step in flow temperature, K, at most.
-const FLOW_STEP_K: f64 = 2.0;
+const FLOW_STEP_K: f64 = 1.5;
 /// Fine steps from least to greatest output.
-const FRACTION_STEPS: usize = 16;
+const FRACTION_STEPS: usize = 24;
 /// Coarse Chebyshev nodes in flow temperature and in fraction.
-const FLOW_NODES: usize = 7;
-const FRACTION_NODES: usize = 6;
+const FLOW_NODES: usize = 11;
+const FRACTION_NODES: usize = 9;
 /// How far below the least difference of flow and source the map goes, so that no look-up meets an edge, K.
 const EDGE_K: f64 = 4.0;
 

@@ -118,7 +118,7 @@ impl Lever {
 
 /// The same account with every price of a kilowatt-hour multiplied.
 ///
-/// Buckets do not depend on rates, so the meter stays; hourly prices are the exception, and their sums scale with them.
+/// Buckets do not depend on rates and hourly sums are kept before scaling, so meter and readings stay.
 fn scaled(account: &Account, factor: f64) -> Account {
     Account {
         tariff: Arc::new(account.tariff.with_energy_times(factor)),

@@ -20,8 +20,8 @@ pub struct Costs {
     pub energy: f64,
     /// Standing and demand charges before tax that is added.
     pub standing: f64,
-    /// Tax that is added.
-    pub tax: f64,
+    /// Tax that is added; nothing where every rate holds it already.
+    pub tax: Option<f64>,
     /// Total of each civil month.
     pub months: [f64; 12],
     /// Total of each year of the weather.
@@ -149,7 +149,9 @@ fn add(costs: &mut Costs, years: &[(i32, Range<usize>)], bill: &Bill) {
     costs.total += number(bill.total()) / count;
     costs.energy += number(bill.energy() + bill.export().unwrap_or_default()) / count;
     costs.standing += number(bill.standing() + bill.demand()) / count;
-    costs.tax += bill.tax().map_or(0.0, number) / count;
+    if let Some(tax) = bill.tax() {
+        *costs.tax.get_or_insert(0.0) += number(tax) / count;
+    }
     for month in &bill.months {
         costs.months[month.month0] += number(month.amount) / count;
         // A few hours of a UTC year can fall into the civil year beside it: they stay with their weather year.

@@ -2,6 +2,7 @@
 
 use super::columns::{Columns, TimeColumns};
 use super::options::ReadOptions;
+use super::row_reader::Fields;
 use super::time_stamp::{DateForm, Stamp, stamp, stamp_of_parts, stamp_of_two};
 
 /// Rows looked at: 13 days of ten-minute readings hold a day above 12, which settles day-first or month-first.
@@ -16,24 +17,6 @@ const FORMS: [DateForm; 6] = [
     DateForm::EpochSeconds,
     DateForm::EpochMilliseconds,
 ];
-
-/// Fields of a row, as bytes.
-pub(super) trait Fields {
-    /// The field at a position, if the row is that long.
-    fn field(&self, at: usize) -> Option<&[u8]>;
-}
-
-impl Fields for csv::ByteRecord {
-    fn field(&self, at: usize) -> Option<&[u8]> {
-        self.get(at)
-    }
-}
-
-impl Fields for Vec<String> {
-    fn field(&self, at: usize) -> Option<&[u8]> {
-        self.get(at).map(|field| field.as_bytes())
-    }
-}
 
 /// How the time of a row is read.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]

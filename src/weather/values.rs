@@ -4,7 +4,8 @@ use super::columns::ValueColumn;
 use super::layout::Layout;
 use super::number;
 use super::options::{ReadOptions, TemperatureUnit};
-use super::rows::{Rows, count};
+use super::rows::Rows;
+use super::words::count;
 use crate::bounds::{Bound, GLOBAL_W_PER_M2, OUTDOOR_C};
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
 
