@@ -215,10 +215,7 @@ pub fn fit(
                         to: interval.to,
                         line: interval.line,
                     })?;
-            Ok(Metered {
-                days,
-                kwh_per_day: interval.kwh / days.len() as f64,
-            })
+            Ok(Metered::new(days, interval.kwh / days.len() as f64))
         })
         .collect::<Result<Vec<_>, FitProblem>>()?;
     let fitted = metered.len() >= LEAST_FOR_BASE;
@@ -413,10 +410,7 @@ impl Signature {
 
     /// Fuel of a stretch of days by the fit, kWh, with limits that hold the fit's own uncertainty.
     pub fn fuel_kwh(&self, days: &[Day]) -> Limits {
-        let all = Metered {
-            days,
-            kwh_per_day: 0.0,
-        };
+        let all = Metered::new(days, 0.0);
         let base_c = self.base_temperature_c.value;
         let number = days.len() as f64;
         let shape = [

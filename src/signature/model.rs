@@ -8,9 +8,17 @@ pub(super) struct Metered<'a> {
     pub days: &'a [Day],
     /// Fuel of a mean day, kWh.
     pub kwh_per_day: f64,
+    /// Mean season of the cold water over its days.
+    pub season: f64,
 }
 
-impl Metered<'_> {
+impl<'a> Metered<'a> {
+    /// An interval of days in which a mean day used some fuel (kWh).
+    pub fn new(days: &'a [Day], kwh_per_day: f64) -> Self {
+        let season = days.iter().map(Day::water_season).sum::<f64>() / days.len() as f64;
+        Self { days, kwh_per_day, season }
+    }
+
     /// Weight: the variance of a mean of days falls with their number.
     pub fn weight(&self) -> f64 {
         self.days.len() as f64
@@ -32,7 +40,7 @@ impl Metered<'_> {
 
     /// What a base load of 1 becomes when a part of it swings with the cold water.
     pub fn base_shape(&self, swing: f64) -> f64 {
-        1.0 + swing * self.mean(Day::water_season)
+        1.0 + swing * self.season
     }
 
     /// Mean outdoor temperature, °C.

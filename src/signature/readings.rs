@@ -89,10 +89,13 @@ impl Readings {
             .from_reader(text.as_bytes());
         let mut problems = Problems::new();
         let place = Place::file(name);
+        if first.trim().is_empty() {
+            return Err(Problem::new(place, "no line of headings", HEADING, "").into());
+        }
         let columns = match reader.headers() {
             Ok(headings) => problems.take(columns(headings, &place)),
             Err(error) => {
-                problems.push(Problem::new(place.clone(), error.to_string(), HEADING, ""));
+                problems.push(unreadable(&error, &place));
                 None
             }
         };
@@ -103,21 +106,7 @@ impl Readings {
         for record in reader.records() {
             match record {
                 Ok(record) => rows.extend(problems.take(row(&record, &columns, &place))),
-                Err(error) => {
-                    let line = error
-                        .position()
-                        .and_then(|at| usize::try_from(at.line()).ok());
-                    let place = Place {
-                        line,
-                        ..place.clone()
-                    };
-                    problems.push(Problem::new(
-                        place,
-                        error.to_string(),
-                        "as many fields as headings",
-                        "",
-                    ));
-                }
+                Err(error) => problems.push(unreadable(&error, &place)),
             }
         }
         let mut findings = Vec::new();
@@ -143,6 +132,21 @@ impl Readings {
             intervals,
             findings,
         })
+    }
+}
+
+/// A line that the CSV reader cannot take apart.
+fn unreadable(error: &csv::Error, place: &Place) -> Problem {
+    let line = error.position().and_then(|at| usize::try_from(at.line()).ok());
+    let place = Place { line, ..place.clone() };
+    match error.kind() {
+        csv::ErrorKind::UnequalLengths { expected_len, len, .. } => Problem::new(
+            place,
+            format!("fields: {len}"),
+            format!("{expected_len}, as there are headings"),
+            "",
+        ),
+        _ => Problem::new(place, error.to_string(), "text in UTF-8", ""),
     }
 }
 
