@@ -37,7 +37,10 @@ const PLAIN: Stated = Stated {
 fn signatures_agree_with_scipy_and_statsmodels() {
     let days = rows("signature_days.csv")
         .iter()
-        .map(|row| Day { date: row[0].parse().unwrap(), mean_c: row[1].parse().unwrap() })
+        .map(|row| Day {
+            date: row[0].parse().unwrap(),
+            mean_c: row[1].parse().unwrap(),
+        })
         .collect();
     let weather = DailyWeather::of_days(days);
     let mut homes: BTreeMap<String, Vec<Interval>> = BTreeMap::new();
@@ -56,17 +59,29 @@ fn signatures_agree_with_scipy_and_statsmodels() {
         let number = |i: usize| row[i].parse::<f64>().unwrap();
         let found = fit(&homes[&row[0]], &weather, &PLAIN).unwrap();
         // Both searches end within about 1e-6 K of the optimum, where the sum of squares is flat.
-        let near = |a: f64, b: f64| assert!((a - b).abs() < 2e-5 * b.abs().max(1.0), "home {}: {a} and {b}", row[0]);
+        let near = |a: f64, b: f64| {
+            assert!(
+                (a - b).abs() < 2e-5 * b.abs().max(1.0),
+                "home {}: {a} and {b}",
+                row[0]
+            )
+        };
         near(found.base_load_kwh_per_day.value, number(1));
         near(found.slope_kwh_per_k_day, number(2));
         near(found.base_temperature_c.value, number(3));
         // Limits are t times the standard error; t by an independent route, scipy.stats.t.ppf(0.975, freedom), for the first.
         let freedom = (found.n() - 3) as f64;
-        let t = statrs::distribution::StudentsT::new(0.0, 1.0, freedom).unwrap().inverse_cdf(0.975);
+        let t = statrs::distribution::StudentsT::new(0.0, 1.0, freedom)
+            .unwrap()
+            .inverse_cdf(0.975);
         // An optimum can lie at a day's own temperature, where a day more or less counts as colder: a part in a thousand.
-        let close = |a: f64, b: f64| assert!((a / b - 1.0).abs() < 1e-3, "home {}: {a} and {b}", row[0]);
+        let close =
+            |a: f64, b: f64| assert!((a / b - 1.0).abs() < 1e-3, "home {}: {a} and {b}", row[0]);
         close(found.base_load_kwh_per_day.half() / t, number(4));
-        close(found.heat_loss_w_per_k.half() / t * 24.0 / 1000.0, number(5));
+        close(
+            found.heat_loss_w_per_k.half() / t * 24.0 / 1000.0,
+            number(5),
+        );
         close(found.base_temperature_c.half() / t, number(6));
         near(found.r_squared, number(7));
         near(found.cv_rmse, number(8));
@@ -74,7 +89,10 @@ fn signatures_agree_with_scipy_and_statsmodels() {
         close(found.points[at].off, number(9));
         odd += found.points.iter().filter(|point| point.odd).count();
     }
-    assert!(odd >= 2, "the readings made 60 % too large are not called odd: {odd}");
+    assert!(
+        odd >= 2,
+        "the readings made 60 % too large are not called odd: {odd}"
+    );
 }
 
 /// A stream of random numbers from a seed (SplitMix64, Steele, Lea and Flood 2014).
@@ -109,7 +127,10 @@ fn weather(random: &mut Random) -> DailyWeather {
             let date = first + Days::new(i);
             spell = 0.8 * spell + random.normal(0.0, 1.8);
             let season = std::f64::consts::TAU * (i as f64 + 243.0 - 25.0) / 365.25;
-            Day { date, mean_c: 10.3 - 6.8 * season.cos() + spell }
+            Day {
+                date,
+                mean_c: 10.3 - 6.8 * season.cos() + spell,
+            }
         })
         .collect();
     DailyWeather::of_days(days)
@@ -128,7 +149,12 @@ fn home(random: &mut Random) -> (f64, Signature) {
     let truth = random.between(80.0, 350.0);
     let base_c = random.normal(15.2, 1.3).clamp(12.0, 18.5);
     let efficiency = random.normal(stated.efficiency, stated.efficiency_within / DEVIATIONS_95);
-    let share = random.normal(stated.hot_water_share, stated.hot_water_share_within / DEVIATIONS_95).clamp(0.0, 1.0);
+    let share = random
+        .normal(
+            stated.hot_water_share,
+            stated.hot_water_share_within / DEVIATIONS_95,
+        )
+        .clamp(0.0, 1.0);
     let base_load = random.between(6.0, 18.0);
     let noise = random.between(4.0, 16.0);
     let slope = truth * 24.0 / 1000.0 / efficiency;
@@ -137,7 +163,9 @@ fn home(random: &mut Random) -> (f64, Signature) {
     let mut intervals = Vec::new();
     for line in 0..13 {
         let to = from + Days::new(25 + (random.unit() * 11.0) as u64);
-        let Some(days) = weather.between(from, to) else { break };
+        let Some(days) = weather.between(from, to) else {
+            break;
+        };
         let kwh = days
             .iter()
             .map(|day| {
@@ -145,7 +173,12 @@ fn home(random: &mut Random) -> (f64, Signature) {
                 water + slope * (base_c - day.mean_c).max(0.0) + random.normal(0.0, noise)
             })
             .sum();
-        intervals.push(Interval { from, to, kwh, line });
+        intervals.push(Interval {
+            from,
+            to,
+            kwh,
+            line,
+        });
         from = to;
     }
     (truth, fit(&intervals, &weather, &stated).unwrap())
@@ -158,7 +191,9 @@ fn limits_hold_the_truth_as_often_as_they_say() {
     let homes: Vec<_> = (0..500).map(|_| home(&mut random)).collect();
     let held = homes
         .iter()
-        .filter(|(truth, found)| (found.heat_loss_w_per_k.low..=found.heat_loss_w_per_k.high).contains(truth))
+        .filter(|(truth, found)| {
+            (found.heat_loss_w_per_k.low..=found.heat_loss_w_per_k.high).contains(truth)
+        })
         .count();
     let share = held as f64 / homes.len() as f64;
     println!("coverage {share:.3}");
@@ -173,14 +208,26 @@ fn limits_hold_the_truth_as_often_as_they_say() {
             (truth - loss.value).abs() <= half
         })
         .count();
-    println!("coverage without efficiency {:.3}", narrow as f64 / homes.len() as f64);
+    println!(
+        "coverage without efficiency {:.3}",
+        narrow as f64 / homes.len() as f64
+    );
     assert!(narrow < held);
-    let bias = homes.iter().map(|(truth, found)| found.heat_loss_w_per_k.value / truth - 1.0).sum::<f64>() / 500.0;
+    let bias = homes
+        .iter()
+        .map(|(truth, found)| found.heat_loss_w_per_k.value / truth - 1.0)
+        .sum::<f64>()
+        / 500.0;
     assert!(bias.abs() < 0.01, "{bias}");
 }
 
 fn winterledger(arguments: &[&str]) -> std::process::Output {
-    Command::cargo_bin("winterledger").unwrap().current_dir(root()).args(arguments).output().unwrap()
+    Command::cargo_bin("winterledger")
+        .unwrap()
+        .current_dir(root())
+        .args(arguments)
+        .output()
+        .unwrap()
 }
 
 /// The shipped readings were made by tests/reference/meter_readings.py: 196 W/K below 16.3 °C, 5.8 kWh a day without heating.
@@ -197,22 +244,36 @@ fn the_command_finds_the_home_that_made_the_readings() {
         "--chart",
         chart.to_str().unwrap(),
     ]);
-    assert!(output.status.success(), "{}", String::from_utf8_lossy(&output.stderr));
+    assert!(
+        output.status.success(),
+        "{}",
+        String::from_utf8_lossy(&output.stderr)
+    );
     let answer: serde_json::Value = serde_json::from_slice(&output.stdout).unwrap();
     let number = |field: &str| answer[field].as_f64().unwrap();
     let inside = |field: &str, truth: f64| {
         let limits = answer[field].as_array().unwrap();
-        assert!((limits[0].as_f64().unwrap()..=limits[1].as_f64().unwrap()).contains(&truth), "{field} {limits:?}");
+        assert!(
+            (limits[0].as_f64().unwrap()..=limits[1].as_f64().unwrap()).contains(&truth),
+            "{field} {limits:?}"
+        );
     };
     inside("heat_loss_95", 196.0);
     inside("base_temperature_95", 16.3);
     inside("base_load_95", 5.8);
     assert!((number("heat_loss_w_per_k") / 196.0 - 1.0).abs() < 0.1);
     assert!(number("r_squared") > 0.98 && number("cv_rmse") < 0.15);
-    assert_eq!(number("n"), 11.0, "the estimated reading is joined to the next");
+    assert_eq!(
+        number("n"),
+        11.0,
+        "the estimated reading is joined to the next"
+    );
     assert!(fs::read(chart).unwrap().starts_with(b"\x89PNG"));
     let told = String::from_utf8(output.stderr).unwrap();
-    assert!(told.contains("the reading of 2023-08-01 is an estimate"), "{told}");
+    assert!(
+        told.contains("the reading of 2023-08-01 is an estimate"),
+        "{told}"
+    );
     // methods §14: 6935 homes, median 198 W/K, standard deviation 119; balance temperature 15.2 °C, sd 2.3 (doi 10.5334/bc.670).
     assert!((number("heat_loss_w_per_k") - 198.0).abs() < 2.0 * 119.0);
     assert!((number("base_temperature_c") - 15.2).abs() < 2.0 * 2.3);
@@ -231,8 +292,15 @@ fn every_bad_file_of_readings_is_refused_with_its_message() {
         }
         seen += 1;
         let name = path.file_name().unwrap().to_str().unwrap();
-        let output = winterledger(&["bills", &format!("tests/data/bills_bad/{name}"), "briefs/terrace.toml"]);
-        assert!(output.stdout.is_empty(), "{name}: something was printed as a result");
+        let output = winterledger(&[
+            "bills",
+            &format!("tests/data/bills_bad/{name}"),
+            "briefs/terrace.toml",
+        ]);
+        assert!(
+            output.stdout.is_empty(),
+            "{name}: something was printed as a result"
+        );
         assert_eq!(output.status.code(), Some(1), "{name}");
         let message = String::from_utf8(output.stderr).unwrap();
         let expected = fs::read_to_string(path.with_extension("txt")).unwrap_or_default();

@@ -347,6 +347,9 @@ fn unscaled_covariance(
     Some(unscaled)
 }
 
+/// Share of a sum of squares that is rounding.
+const ROUNDING: f64 = 1e-12;
+
 fn points(
     intervals: &[Interval],
     metered: &[Metered<'_>],
@@ -371,8 +374,10 @@ fn points(
             let fitted = found.base_load * row[0] + found.slope * row[1];
             let residual = (one.kwh_per_day - fitted) * one.weight().sqrt();
             let leverage = one.weight() * quadratic(row, unscaled);
-            let rest = found.squares - residual * residual / (1.0 - leverage);
-            let off = if rest > 0.0 && freedom > 1.0 {
+            // What is left without it; never less than rounding leaves.
+            let rest = (found.squares - residual * residual / (1.0 - leverage))
+                .max(ROUNDING * found.squares);
+            let off = if found.squares > 0.0 && freedom > 1.0 {
                 residual / (rest / (freedom - 1.0) * (1.0 - leverage)).sqrt()
             } else {
                 0.0
@@ -540,8 +545,8 @@ mod tests {
             Err(FitProblem::OutsideWeather { line: 13, .. })
         ));
         let mut odd = readings;
-        odd[4].kwh *= 3.0;
+        odd[1].kwh *= 1.4;
         let found = fit(&odd, &weather(), &stated()).unwrap();
-        assert!(found.points[4].odd && found.points.iter().filter(|p| p.odd).count() == 1);
+        assert!(found.points[1].odd && found.points.iter().filter(|p| p.odd).count() == 1);
     }
 }

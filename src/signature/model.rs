@@ -16,7 +16,11 @@ impl<'a> Metered<'a> {
     /// An interval of days in which a mean day used some fuel (kWh).
     pub fn new(days: &'a [Day], kwh_per_day: f64) -> Self {
         let season = days.iter().map(Day::water_season).sum::<f64>() / days.len() as f64;
-        Self { days, kwh_per_day, season }
+        Self {
+            days,
+            kwh_per_day,
+            season,
+        }
     }
 
     /// Weight: the variance of a mean of days falls with their number.

@@ -137,10 +137,17 @@ impl Readings {
 
 /// A line that the CSV reader cannot take apart.
 fn unreadable(error: &csv::Error, place: &Place) -> Problem {
-    let line = error.position().and_then(|at| usize::try_from(at.line()).ok());
-    let place = Place { line, ..place.clone() };
+    let line = error
+        .position()
+        .and_then(|at| usize::try_from(at.line()).ok());
+    let place = Place {
+        line,
+        ..place.clone()
+    };
     match error.kind() {
-        csv::ErrorKind::UnequalLengths { expected_len, len, .. } => Problem::new(
+        csv::ErrorKind::UnequalLengths {
+            expected_len, len, ..
+        } => Problem::new(
             place,
             format!("fields: {len}"),
             format!("{expected_len}, as there are headings"),
