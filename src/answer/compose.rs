@@ -12,6 +12,7 @@ use super::home::{
 use crate::home::Pattern;
 use crate::problem::{Finding, Problems, Severity};
 use crate::signature::{DailyWeather, Signature};
+use crate::source::Memory;
 use crate::study::{
     BalancePoint, BreakEven, Case, Contender, DesignPoint, Lever, Outcome, balance_point,
     break_even, design_point, under_pattern,
@@ -136,12 +137,16 @@ fn system(
     let sums = outcome.mean_sums();
     let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
     let burns_fuel = matches!(contender.system.heating, Heating::Boiler { .. });
+    let ground = contender
+        .aged
+        .map_or_else(Memory::default, |aged| aged.memory);
     let balance = |with_hot_water| match &contender.system.heating {
         Heating::HeatPump(machine) => balance_point(
             &contender.system,
             machine,
             contender.indoor_c,
             with_hot_water,
+            ground,
         ),
         _ => None,
     };
@@ -154,6 +159,7 @@ fn system(
         contender.indoor_c,
         contender.design_outdoor_c,
         contender.design_load_kw,
+        ground,
     );
     SystemAnswer {
         label: contender.system.label.clone(),

@@ -4,7 +4,10 @@ pub mod bills;
 mod compose;
 pub mod cycle;
 mod estimate;
+pub mod explain;
 mod home;
+pub mod machine;
+pub mod rating;
 pub mod tariff;
 
 pub use compose::{BillsTold, Told, compare_patterns, compose};

@@ -8,6 +8,7 @@ mod energy;
 mod envelope;
 mod fabric;
 mod files;
+mod ground;
 mod home;
 mod hot_water;
 mod leaves;

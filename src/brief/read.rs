@@ -180,6 +180,7 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         Some(bills) if check.problems().is_empty() => Some(scaled(bills, &mut case, check)?),
         _ => None,
     };
+    case.age_grounds();
     Some(Brief {
         case,
         told: Told {

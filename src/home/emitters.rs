@@ -385,6 +385,11 @@ impl Emitters {
         self.greatest_output_kw
     }
 
+    /// Mean water minus room temperature of the leading group at the design load, K.
+    pub fn design_excess_k(&self) -> f64 {
+        self.groups[0].excess_k(self.room_c)
+    }
+
     /// Flow minus return at the design load, K.
     pub fn design_spread_k(&self) -> f64 {
         let water = self.at_load(self.design_load_kw, self.room_c);

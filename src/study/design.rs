@@ -2,6 +2,7 @@
 
 use super::balance::cold_side;
 use crate::home::water_flow_l_per_min;
+use crate::source::Memory;
 use crate::year::{Heating, System};
 
 /// A system at its design point.
@@ -39,16 +40,22 @@ impl DesignPoint {
     }
 }
 
-/// The design point of a system for a load (kW) at an outdoor temperature and a set point (°C).
+/// The design point of a system for a load (kW) at an outdoor temperature and a set point (°C), with what the ground remembers.
 ///
 /// A machine whose highest flow is below the one needed gives what the emitters carry at its highest.
-pub fn design_point(system: &System, indoor_c: f64, outdoor_c: f64, load_kw: f64) -> DesignPoint {
+pub fn design_point(
+    system: &System,
+    indoor_c: f64,
+    outdoor_c: f64,
+    load_kw: f64,
+    ground: Memory,
+) -> DesignPoint {
     let emitters = &system.home.emitters;
     let water = emitters.at_load(load_kw, indoor_c);
     let heater_flow_c = water.flow_c + emitters.header_k();
     let (output_kw, backup_kw) = match &system.heating {
         Heating::HeatPump(machine) => {
-            let cold = cold_side(machine, outdoor_c);
+            let cold = cold_side(machine, outdoor_c, &ground);
             let highest_c = machine.machine.limits().highest_flow_at(cold.open_c);
             let output_kw = if heater_flow_c <= highest_c {
                 machine.machine.greatest_output_kw(&cold, heater_flow_c)

@@ -22,11 +22,12 @@ pub fn under_pattern(
         contender.plan.electricity.clone(),
         contender.plan.fuel.clone(),
     );
-    let other = Contender {
+    let mut other = Contender {
         plan,
         pattern: pattern.clone(),
         ..contender.clone()
     };
+    other.moved();
     case.run_one(&other, None)
 }
 
@@ -81,6 +82,7 @@ pub fn scale_to_fuel(case: &mut Case, fuel_kwh: f64) -> Result<f64, Problems> {
             for contender in &mut case.contenders {
                 let fabric = &mut contender.system.home.fabric;
                 *fabric = fabric.with_heat_loss(fabric.heat_loss_w_per_k() * middle);
+                contender.moved();
             }
             return Ok(middle);
         }

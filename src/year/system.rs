@@ -3,7 +3,7 @@
 use crate::heater::Boiler;
 use crate::heatpump::HeatPump;
 use crate::home::{Home, StoreState};
-use crate::source::Source;
+use crate::source::{Memory, Source};
 
 /// A home and what heats it.
 #[derive(Debug, Clone)]
@@ -59,6 +59,8 @@ pub struct State {
     pub recovering: bool,
     /// Hot-water store; full, and of no meaning where there is none.
     pub store: StoreState,
+    /// What the ground remembers of past draws.
+    pub ground: Memory,
 }
 
 impl State {
@@ -74,6 +76,7 @@ impl State {
             room_c: set_point_c,
             recovering: false,
             store: store.map_or(none, |store| store.full()),
+            ground: Memory::default(),
         }
     }
 }
