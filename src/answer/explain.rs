@@ -132,7 +132,6 @@ fn rooms(home: &Home, contender: &Contender, traced: &Traced) -> Part {
     let row = &traced.row;
     let fabric = &home.fabric;
     let loss = fabric.heat_loss_w_per_k() / 1000.0;
-    let left = fabric.left_after_hour();
     let mut part = lines();
     part.add("heat-loss coefficient", loss * 1000.0, "W/K", "brief");
     part.add(
@@ -152,12 +151,15 @@ fn rooms(home: &Home, contender: &Contender, traced: &Traced) -> Part {
             row.gains_kwh - fabric.internal_gains_kw()
         ),
     );
-    let settles = (row.set_point_c - traced.before.room_c * left) / (1.0 - left);
+    let (settles, within) = fabric.recovery_heads_for_c(traced.before.room_c, row.set_point_c);
     part.add(
         "temperature to head for",
         settles,
         "°C",
-        format!("(set point − before × e^(−1h/τ)) / (1 − e^(−1h/τ)), e^(−1h/τ) = {left:.4}"),
+        format!(
+            "(set point − before × e^(−{within:.0}h/τ)) / (1 − e^(−{within:.0}h/τ)), τ = {:.1} h",
+            fabric.time_constant_h()
+        ),
     );
     let now = format!(
         "H (head for − outdoor) − gains = {loss:.3} × ({settles:.2} − {:.2}) − {:.3}, not below 0",

@@ -15,7 +15,9 @@ mod store;
 
 pub use draws::{HotWater, TappingProfile, WATER_KWH_PER_L_K};
 pub use emitters::{Control, EmitterKind, Emitters, Group, MOST_GROUPS, Supply, WaterTemperatures};
-pub use fabric::{AIR_WH_PER_M3_K, Construction, Fabric, RoomStep, ventilation_w_per_k};
+pub use fabric::{
+    AIR_WH_PER_M3_K, Construction, Fabric, RECOVERY_H, RoomStep, ventilation_w_per_k,
+};
 pub use floor::{EDGE_FLOOR_C, OCCUPIED_FLOOR_C, floor_output_w_per_m2, floor_surface_c};
 pub use pattern::{DaySpan, FROST_C, Pattern, WarmUp};
 pub use pipe::{QUIET_M_PER_S, smallest_pipe_mm, water_flow_l_per_min};
