@@ -53,6 +53,7 @@ mod load_duration;
 mod machine_performance;
 mod monthly;
 mod pressure_enthalpy;
+mod signature;
 mod swings;
 
 pub use annual_cost::{AnnualCost, SystemCost, annual_cost};
@@ -77,6 +78,7 @@ pub use paint::PNG_PIXELS;
 pub use palette::Colour;
 pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
 pub use scene::WIDTH;
+pub use signature::{MeterPoint, SignaturePlot, signature_plot};
 pub use swings::{Swing, Swings, swings};
 
 use std::fmt;

@@ -4,6 +4,7 @@
 //! `run(&Args) -> Result<(), Failure>`. Text goes to stdout, findings and progress to stderr, and the exit status is 0
 //! done, 1 the input is wrong, 2 usage, 3 cannot write.
 
+mod bills;
 mod cycle;
 mod estimate;
 mod explain;
@@ -38,6 +39,7 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Estimate(estimate::Args),
+    Bills(bills::Args),
     Explain(explain::Args),
     Cycle(cycle::Args),
     Machine(machine::Args),
@@ -57,6 +59,7 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
+        Command::Bills(args) => bills::run(args),
         Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
         Command::Machine(args) => machine::run(args),
