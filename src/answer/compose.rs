@@ -6,6 +6,7 @@ use super::estimate::{
     Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };
 use crate::problem::{Finding, Problems, Severity};
+use crate::source::Memory;
 use crate::study::{
     BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even,
 };
@@ -97,12 +98,16 @@ fn system(
     let sums = outcome.mean_sums();
     let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
     let burns_fuel = matches!(contender.system.heating, Heating::Boiler { .. });
+    let ground = contender
+        .aged
+        .map_or_else(Memory::default, |aged| aged.memory);
     let balance = |with_hot_water| match &contender.system.heating {
         Heating::HeatPump(machine) => balance_point(
             &contender.system,
             machine,
             contender.indoor_c,
             with_hot_water,
+            ground,
         ),
         _ => None,
     };

@@ -3,6 +3,7 @@
 mod compose;
 pub mod cycle;
 mod estimate;
+pub mod explain;
 pub mod machine;
 pub mod rating;
 pub mod tariff;

@@ -6,6 +6,7 @@
 
 mod cycle;
 mod estimate;
+mod explain;
 mod failure;
 mod files;
 mod machine;
@@ -37,6 +38,7 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Estimate(estimate::Args),
+    Explain(explain::Args),
     Cycle(cycle::Args),
     Machine(machine::Args),
     Rating(rating::Args),
@@ -55,6 +57,7 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
+        Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
         Command::Machine(args) => machine::run(args),
         Command::Rating(args) => rating::run(args),

@@ -6,8 +6,9 @@ use chrono_tz::Tz;
 use crate::calendar::HourAxis;
 use crate::year::{COLUMNS, Ledger};
 
-/// Digits after the point: a tenth of a watt-hour and of a millikelvin, far below what any figure means.
-const DIGITS: usize = 4;
+/// Digits after the point: far below what any figure means, but thousands of hours at rest are alike, and what rounding takes
+/// from one it takes from all.
+const DIGITS: usize = 6;
 
 /// The ledger of one system as CSV. Missing is blank; times are the beginning of the hour.
 ///

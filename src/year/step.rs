@@ -102,13 +102,14 @@ pub fn step<P: Probe>(
     // What answers.
     match &system.heating {
         Heating::HeatPump(system) => {
-            let offer = system.source.offer(hour, outdoor_c);
+            let offer = system.source.offer(hour, outdoor_c, &state.ground);
             let cold = ColdSide {
                 open_c: offer.open_c,
                 k_per_kw: offer.k_per_kw,
                 relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
             };
             heat_pump_hour(system, home, &cold, &water, &rooms, &mut row, probe);
+            ground_hour(hour, system, state, &mut row);
         }
         Heating::Boiler {
             boiler,
@@ -196,6 +197,14 @@ fn store_hour(home: &Home, water: &StoreStep, state: &mut State, row: &mut Row) 
     state.store_c = store.charged_c(water.before_c, heat_kwh);
     state.charging = water.wanted_kwh > 0.0 && heat_kwh < water.wanted_kwh * (1.0 - 1e-9);
     row.store_c = Some(state.store_c);
+}
+
+/// Tells the source what was drawn, and charges its pump.
+fn ground_hour(hour: usize, system: &MachineSystem, state: &mut State, row: &mut Row) {
+    let source = &system.source;
+    source.drawn(hour, row.extracted_kwh, &mut state.ground);
+    row.source_side_kwh += source.pump_kwh(hour, row.running_hours);
+    row.returned_kwh = source.returned_kwh(hour);
 }
 
 /// A heat pump: a block of hot water first, the rooms in what is left of the hour, backup for what is missing.
@@ -314,7 +323,11 @@ fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
     row.running_hours += delivered.running_hours;
     row.starts += delivered.starts;
     if delivered.running_hours > 0.0 {
-        row.source_c = Some(delivered.source_c);
+        // Of two duties in the hour the colder: what the source had to bear.
+        row.source_c = Some(
+            row.source_c
+                .map_or(delivered.source_c, |c| c.min(delivered.source_c)),
+        );
     }
     row.flags |= Flags::CYCLING.when(delivered.flags.cycling)
         | Flags::FLOW_CAPPED.when(delivered.flags.capped_flow)
