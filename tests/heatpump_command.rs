@@ -44,6 +44,8 @@ fn every_sheet_is_fitted_and_drawn() {
             "left out %",
             "field factor 0.85",
             "map within",
+            "caution: ",
+            "electrician",
         ] {
             assert!(
                 shown.contains(wanted),
