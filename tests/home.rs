@@ -147,17 +147,19 @@ fn nine_hours() -> Pattern {
     pattern
 }
 
-/// methods §16: against 9 h a day, heating all day raises demand by 5 to 17 % with a time constant of 71 to 19 h; the weather of that
-/// figure is not known, so two percentage points are left for it.
+/// methods §16: against 9 h a day, heating all day raises demand by 5 to 17 % with a time constant of 71 to 19 h. Weather and output
+/// behind that figure are not known; with 12 kW, twice the design load, one percentage point is left for them.
 #[test]
 fn continuous_running_needs_more_heat_than_nine_hours_a_day() {
     let mut outdoor_c = weather().outdoor_c;
     outdoor_c.iter_mut().for_each(|c| *c = c.min(20.0));
     let site = site_of(outdoor_c);
     let more = |time_constant_h: f64| {
-        let system = system(time_constant_h, None);
+        let mut system = system(time_constant_h, None);
+        system.heating = Heating::DirectElectric { output_kw: 12.0 };
+        system.home.emitters = Emitters::new(EmitterKind::Radiators, 15.0, 60.0, 50.0, 20.0, 85.0);
         let heat = |pattern: &Pattern| -> f64 {
-            rows(&site, &system, &plan(pattern, &site, 30.0))
+            rows(&site, &system, &plan(pattern, &site, 12.0))
                 .iter()
                 .map(Row::space_heat_kwh)
                 .sum()
@@ -166,8 +168,8 @@ fn continuous_running_needs_more_heat_than_nine_hours_a_day() {
     };
     let (heavy, light) = (more(71.0), more(19.0));
     println!("71 h {heavy:.3}, 19 h {light:.3}");
-    assert!((heavy - 0.05).abs() < 0.02, "{heavy}");
-    assert!((light - 0.17).abs() < 0.02, "{light}");
+    assert!((heavy - 0.05).abs() < 0.01, "{heavy}");
+    assert!((light - 0.17).abs() < 0.01, "{light}");
 }
 
 /// A cold night of −3 °C: set back from 22 to 6 h, warmed up in time.
@@ -210,8 +212,8 @@ fn a_set_back_recovers_in_time_and_evenly() {
         assert!((pair[0].space_heat_kwh() / pair[1].space_heat_kwh() - 1.0).abs() < 1e-6);
     }
     assert!(warming.iter().all(|row| row.space_heat_kwh() <= 8.0));
-    // Spread over five hours, less power is asked for; at the time, the first hour of the day is cold.
-    let ahead = rows(&site, &system, &plan_of(WarmUp::Ahead(5)));
+    // Spread over seven hours, less power is asked for; at the time, the first hour of the day is cold.
+    let ahead = rows(&site, &system, &plan_of(WarmUp::Ahead(7)));
     let most = |rows: &[Row]| {
         rows[70..80]
             .iter()

@@ -259,7 +259,7 @@ fn homes_that_cannot_be_used_are_refused_with_what_to_write() {
             "[[home.room]]\nname = \"Kitchen\"\nheat_loss = \"37 W/K\"\nradiator = \"1.9 kW\"\n",
             "",
             &[
-                "the 5 rooms lose 3.98 kW together at the design point, the home 4.87 kW",
+                "the 5 rooms lose 3.97 kW together at the design point, the home 4.87 kW",
                 "is a room missing, or one there twice?",
             ],
         ),

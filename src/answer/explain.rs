@@ -4,7 +4,7 @@ use chrono::{SecondsFormat, TimeZone as _};
 use serde::Serialize;
 
 use super::cycle::StateAnswer;
-use crate::home::{Home, RECOVERY_H};
+use crate::home::Home;
 use crate::study::{Case, Contender, Traced, TracedDuty};
 use crate::year::{DutyKind, Flags, Heating, MachineSystem, Row};
 
@@ -151,13 +151,13 @@ fn rooms(home: &Home, contender: &Contender, traced: &Traced) -> Part {
             row.gains_kwh - fabric.internal_gains_kw()
         ),
     );
-    let settles = fabric.recovery_heads_for_c(traced.before.room_c, row.set_point_c);
+    let (settles, within) = fabric.recovery_heads_for_c(traced.before.room_c, row.set_point_c);
     part.add(
         "temperature to head for",
         settles,
         "°C",
         format!(
-            "(set point − before × e^(−{RECOVERY_H:.0}h/τ)) / (1 − e^(−{RECOVERY_H:.0}h/τ)), τ = {:.1} h",
+            "(set point − before × e^(−{within:.0}h/τ)) / (1 − e^(−{within:.0}h/τ)), τ = {:.1} h",
             fabric.time_constant_h()
         ),
     );

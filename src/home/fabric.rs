@@ -147,6 +147,9 @@ impl Fabric {
     }
 
     /// The constant heat that brings the room from `room_c` to `target_c` in one hour, kWh; 0 when it gets there alone.
+    ///
+    /// One capacity: `C dT/dt = Q + G − H (T − To)`, solved exactly for constant right-hand side:
+    /// `T(t) = T∞ + (T0 − T∞) e^(−t/τ)` with `T∞ = To + (Q + G)/H`.
     pub fn heat_to_reach_kwh(
         &self,
         room_c: f64,
@@ -154,25 +157,7 @@ impl Fabric {
         outdoor_c: f64,
         gains_kw: f64,
     ) -> f64 {
-        self.steady_heat(room_c, target_c, outdoor_c, gains_kw, self.left_after_hour)
-    }
-
-    /// The constant heat that brings the room from `room_c` to `target_c` in [`RECOVERY_H`], kW: what a controller asks for.
-    ///
-    /// At the set point it is the steady loss less gains, whatever the time.
-    pub fn heat_wanted_kw(&self, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
-        self.steady_heat(
-            room_c,
-            target_c,
-            outdoor_c,
-            gains_kw,
-            self.left_after_recovery,
-        )
-    }
-
-    /// Temperature that the heat wanted heads for, °C.
-    pub fn recovery_heads_for_c(&self, room_c: f64, target_c: f64) -> f64 {
-        heads_for_c(room_c, target_c, self.left_after_recovery)
+        self.heat_kw(self.left_after_hour, room_c, target_c, outdoor_c, gains_kw)
     }
 
     /// The constant heat that brings the room from `room_c` to `target_c` in a number of hours (≥ 1) of the same weather, kW.
@@ -185,21 +170,42 @@ impl Fabric {
         gains_kw: f64,
     ) -> f64 {
         let left = self.left_after_hour.powi(i32::from(hours));
-        self.steady_heat(room_c, target_c, outdoor_c, gains_kw, left)
+        self.heat_kw(left, room_c, target_c, outdoor_c, gains_kw)
     }
 
-    /// One capacity: `C dT/dt = Q + G − H (T − To)`, solved exactly for a constant right-hand side:
-    /// `T(t) = T∞ + (T0 − T∞) e^(−t/τ)` with `T∞ = To + (Q + G)/H`; `left` is `e^(−t/τ)`.
-    fn steady_heat(
-        &self,
-        room_c: f64,
-        target_c: f64,
-        outdoor_c: f64,
-        gains_kw: f64,
-        left: f64,
-    ) -> f64 {
-        let settles_c = heads_for_c(room_c, target_c, left);
+    /// What a controller asks for, kW: the constant heat that brings a cooler room from `room_c` to `target_c` in
+    /// [`RECOVERY_H`], and lets a warmer one fall at once.
+    ///
+    /// At the set point it is the steady loss less gains, whatever the time.
+    pub fn heat_wanted_kw(&self, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
+        let left = self.left_at_target(room_c, target_c);
+        self.heat_kw(left, room_c, target_c, outdoor_c, gains_kw)
+    }
+
+    /// Share of its distance from where it heads that a room has left when it is at the target.
+    fn left_at_target(&self, room_c: f64, target_c: f64) -> f64 {
+        if room_c > target_c {
+            self.left_after_hour
+        } else {
+            self.left_after_recovery
+        }
+    }
+
+    fn heat_kw(&self, left: f64, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
+        let settles_c = self.heads_for_c(left, room_c, target_c);
         (self.heat_loss_kw_per_k * (settles_c - outdoor_c) - gains_kw).max(0.0)
+    }
+
+    /// Temperature the room heads for when a share `left` of its distance is left at the target, °C.
+    fn heads_for_c(&self, left: f64, room_c: f64, target_c: f64) -> f64 {
+        (target_c - room_c * left) / (1.0 - left)
+    }
+
+    /// Temperature that the heat wanted heads for, °C, and in how many hours it passes the target.
+    pub fn recovery_heads_for_c(&self, room_c: f64, target_c: f64) -> (f64, f64) {
+        let left = self.left_at_target(room_c, target_c);
+        let hours = if room_c > target_c { 1.0 } else { RECOVERY_H };
+        (self.heads_for_c(left, room_c, target_c), hours)
     }
 
     /// Whether it stores any heat: without storage nothing is gained by heating ahead.
@@ -246,11 +252,6 @@ impl Fabric {
     }
 }
 
-/// Temperature a room heads for when a share `left` of its distance to it is left at the target, °C.
-fn heads_for_c(room_c: f64, target_c: f64, left: f64) -> f64 {
-    (target_c - room_c * left) / (1.0 - left)
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -292,6 +293,14 @@ mod tests {
         assert!((fabric.step(15.0, heat, -5.0, 0.3, 20.0).end_c - 20.0).abs() < 1e-12);
     }
 
+    /// EN 12831-1: 0.34 Wh/m³K \[from memory\]; 240 m³ at 0.5 air changes an hour lose 40.8 W/K.
+    #[test]
+    fn ventilation_follows_volume_and_air_changes() {
+        assert!((ventilation_w_per_k(0.5, 240.0) - 40.8).abs() < 1e-9);
+        // Density times heat capacity of dry air at 20 °C and 101.325 kPa: 1.2041 kg/m³ and 1006 J/kgK.
+        assert!((AIR_WH_PER_M3_K - 1.2041 * 1006.0 / 3600.0).abs() < 0.005);
+    }
+
     /// At the set point the heat wanted is the steady loss, so that a year of it is the steady-state sum.
     #[test]
     fn at_the_set_point_the_heat_wanted_is_the_steady_loss() {
@@ -299,14 +308,8 @@ mod tests {
         assert!((wanted - (0.212 * 17.0 - 0.4)).abs() < 1e-12);
         let cool = terrace().heat_wanted_kw(19.5, 20.0, 3.0, 0.4);
         assert!(cool > wanted && cool < terrace().heat_to_reach_kwh(19.5, 20.0, 3.0, 0.4));
-    }
-
-    /// EN 12831-1: 0.34 Wh/m³K \[from memory\]; 240 m³ at 0.5 air changes an hour lose 40.8 W/K.
-    #[test]
-    fn ventilation_follows_volume_and_air_changes() {
-        assert!((ventilation_w_per_k(0.5, 240.0) - 40.8).abs() < 1e-9);
-        // Density times heat capacity of dry air at 20 °C and 101.325 kPa: 1.2041 kg/m³ and 1006 J/kgK.
-        assert!((AIR_WH_PER_M3_K - 1.2041 * 1006.0 / 3600.0).abs() < 0.005);
+        // A room that is let cool asks for nothing, and does not slow its fall.
+        assert_eq!(terrace().heat_wanted_kw(20.0, 16.0, 3.0, 0.0), 0.0);
     }
 
     proptest! {

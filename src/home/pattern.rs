@@ -35,7 +35,7 @@ pub enum WarmUp {
     InTime,
     /// Spread over this many hours before the spell, 1 to 12.
     Ahead(u8),
-    /// Not before the spell begins.
+    /// Not before the spell begins, then with all the heat there is, as a thermostat switched by a clock does.
     AtTheTime,
 }
 

@@ -42,22 +42,20 @@ pub fn following(
             lowest_c - ability.backup_band_k
         })
         .collect();
-    let recovery = match pattern.warm_up {
-        WarmUp::AtTheTime => None,
-        WarmUp::InTime => Some((LONGEST_WARM_UP_H, RESERVE * ability.output_kw)),
-        WarmUp::Ahead(hours) => Some((hours.clamp(1, LONGEST_WARM_UP_H), 0.0)),
+    let (longest_h, begins_above_kw) = match pattern.warm_up {
+        WarmUp::AtTheTime => (0, 0.0),
+        WarmUp::InTime => (LONGEST_WARM_UP_H, RESERVE * ability.output_kw),
+        WarmUp::Ahead(hours) => (hours.clamp(1, LONGEST_WARM_UP_H), 0.0),
     };
-    let recovery =
-        recovery
-            .filter(|_| !pattern.is_continuous())
-            .map(|(longest_h, begins_above_kw)| {
-                let (hours_ahead, target_c) = rises(&set_point_c, longest_h);
-                Recovery {
-                    hours_ahead,
-                    target_c,
-                    begins_above_kw,
-                }
-            });
+    let recovery = (!pattern.is_continuous()).then(|| {
+        let (hours_ahead, target_c) = rises(&set_point_c, longest_h);
+        Recovery {
+            hours_ahead,
+            target_c,
+            begins_above_kw,
+            at_the_time: pattern.warm_up == WarmUp::AtTheTime,
+        }
+    });
     Plan {
         set_point_c,
         backup_below_c,
@@ -75,7 +73,9 @@ fn rises(set_point_c: &[f64], longest_h: u8) -> (Vec<u8>, Vec<f64>) {
     // Backwards: one hour before a rise is one hour ahead of it, the hour before that two.
     for hour in (0..set_point_c.len().saturating_sub(1)).rev() {
         let next = hour + 1;
-        if set_point_c[next] > set_point_c[hour] {
+        if longest_h == 0 {
+            break;
+        } else if set_point_c[next] > set_point_c[hour] {
             (hours_ahead[hour], target_c[hour]) = (1, set_point_c[next]);
         } else if hours_ahead[next] > 0
             && hours_ahead[next] < longest_h

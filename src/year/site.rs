@@ -44,13 +44,15 @@ pub struct Recovery {
     pub target_c: Vec<f64>,
     /// The warm-up begins once it would take more than this, kW; 0 to begin at once.
     pub begins_above_kw: f64,
+    /// Nothing is heated ahead; once a spell has begun, a thermostat asks for all the heat there is.
+    pub at_the_time: bool,
 }
 
 impl Recovery {
-    /// Heat of an hour that brings the rooms to the set point in time, kWh; 0 while there is time yet.
+    /// Heat that brings the rooms to the set point in time, kW; 0 while there is time yet.
     ///
     /// The even heat that arrives in time is asked for, so that a heat pump can run long and cool.
-    pub fn heat_kwh(
+    pub fn heat_kw(
         &self,
         hour: usize,
         fabric: &Fabric,
@@ -78,7 +80,7 @@ pub struct Plan {
     pub set_point_c: Vec<f64>,
     /// The backup heater only keeps the rooms above this, °C.
     pub backup_below_c: Vec<f64>,
-    /// The warm-up before a higher set point; none when the set point is the same all day or nothing is heated ahead.
+    /// The warm-up before a higher set point; none when the set point is the same all day.
     pub recovery: Option<Recovery>,
     /// Rooms are aired from a few kelvins above this, °C: the highest set point.
     pub comfort_c: f64,

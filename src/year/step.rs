@@ -9,7 +9,7 @@ use super::system::{Heating, MachineSystem, State, System};
 use crate::calendar::CivilHour;
 use crate::heater::Boiler;
 use crate::heatpump::{ColdSide, Delivered, Duty};
-use crate::home::{Home, StoreStep, Supply, Tapped, WaterTemperatures};
+use crate::home::{Control, Home, StoreStep, Tapped, WaterTemperatures};
 
 /// Rooms this much below the set point at the end of an hour are short of heat, K. A choice of ours: about what people notice.
 const SHORT_K: f64 = 1.0;
@@ -96,22 +96,18 @@ pub fn step<P: Probe>(
         home.fabric
             .heat_to_reach_kwh(state.room_c, target_c, outdoor_c, gains_kw)
     };
-    let warm_up_kwh = plan.recovery.as_ref().map_or(0.0, |recovery| {
+    let mut wanted_kw = match &plan.recovery {
+        Some(recovery) if recovery.at_the_time => reach(set_point_c),
+        _ => home.fabric.heat_wanted_kw(state.room_c, set_point_c, outdoor_c, gains_kw),
+    };
+    if let Some(recovery) = &plan.recovery {
         let under_way = &mut state.recovering;
-        recovery.heat_kwh(
-            hour,
-            &home.fabric,
-            state.room_c,
-            outdoor_c,
-            gains_kw,
-            under_way,
-        )
-    });
-    row.flags |= Flags::RECOVERY.when(warm_up_kwh > 0.0);
-    let wanted_kw = home
-        .fabric
-        .heat_wanted_kw(state.room_c, set_point_c, outdoor_c, gains_kw)
-        .max(warm_up_kwh);
+        let fabric = &home.fabric;
+        let warm_up_kw =
+            recovery.heat_kw(hour, fabric, state.room_c, outdoor_c, gains_kw, under_way);
+        row.flags |= Flags::RECOVERY.when(warm_up_kw > 0.0);
+        wanted_kw = wanted_kw.max(warm_up_kw);
+    }
     row.space_wanted_kwh = wanted_kw;
     let rooms = Rooms {
         wanted_kw: wanted_kw.min(home.emitters.greatest_output_kw()),
@@ -263,32 +259,27 @@ fn heat_pump_hour<P: Probe>(
     if rooms.wanted_kw > 0.0 {
         if hours_left > LEAST_RUN_H {
             // What hot water took from the hour is left to the fabric's storage: a compensated flow is not raised for it.
-            let emitters = &home.emitters;
             let ask = |heat_kw: f64| {
-                let warm = emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
-                let duty = Duty {
+                let warm = home.emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
+                Duty {
                     heat_kw: warm.heat_kw,
-                    flow_c: warm.water.flow_c + emitters.header_k(),
+                    flow_c: warm.water.flow_c + home.emitters.header_k(),
                     spread_k: warm.spread_k,
                     hours: hours_left,
                     at_full_output: false,
-                };
-                (warm, duty)
+                }
             };
-            let Balanced {
-                warm,
-                duty,
-                delivered,
-                too_cool,
-            } = in_balance(system, cold, rooms.wanted_kw, ask);
-            row.flags |= Flags::FLOW_TOO_COOL.when(too_cool);
+            let (duty, delivered) = in_balance(system, cold, rooms.wanted_kw, ask);
+            let asked_kw = rooms.wanted_kw * (1.0 - ROUNDING);
+            let by_control = duty.heat_kw < asked_kw && !delivered.flags.short;
+            row.flags |= Flags::FLOW_TOO_COOL.when(by_control);
             probe.see(DutyKind::SpaceHeat, cold, &duty, &delivered);
             row.machine_space_kwh = delivered.heat_kwh;
             row.machine_space_electricity_kwh = charge(row, &delivered);
             row.space_cop = cop(delivered.heat_kwh, row.machine_space_electricity_kwh);
             if delivered.heat_kwh > 0.0 {
                 let to_emitters_c = delivered.flow_c - home.emitters.header_k();
-                let throttled_k = warm.water.flow_c - warm.water.return_c - warm.spread_k;
+                let throttled_k = throttled_k(home, rooms, duty.heat_kw);
                 row.machine_flow_c = Some(delivered.flow_c);
                 row.space_flow_c = Some(to_emitters_c);
                 row.space_return_c =
@@ -308,29 +299,19 @@ fn heat_pump_hour<P: Probe>(
     row.idle_kwh = at_rest_kw * (1.0 - row.running_hours).max(0.0);
 }
 
-/// What emitters and machine agreed on.
-struct Balanced {
-    warm: Supply,
-    duty: Duty,
-    delivered: Delivered,
-    /// Whether the flow that is set carries less than was wanted.
-    too_cool: bool,
-}
-
 /// The machine in balance with the emitters: where it cannot give what is asked, the flow is what the emitters need for the heat it
 /// does give, which is more at the lower flow.
 fn in_balance(
     system: &MachineSystem,
     cold: &ColdSide,
     wanted_kw: f64,
-    ask: impl Fn(f64) -> (Supply, Duty),
-) -> Balanced {
+    ask: impl Fn(f64) -> Duty,
+) -> (Duty, Delivered) {
     /// Heat asked and heat given agree to this share.
     const TOLERANCE: f64 = 1e-4;
     /// Substitutions; output falls by a few percent over the kelvins in question, so each gains more than a digit.
     const MOST: usize = 12;
-    let (mut warm, mut duty) = ask(wanted_kw);
-    let too_cool = warm.heat_kw < wanted_kw * (1.0 - ROUNDING);
+    let mut duty = ask(wanted_kw);
     let mut delivered = system.machine.deliver(cold, &duty);
     for _ in 0..MOST {
         let given_kw = delivered.heat_kwh / duty.hours;
@@ -338,18 +319,23 @@ fn in_balance(
         if !short || given_kw >= duty.heat_kw * (1.0 - TOLERANCE) {
             break;
         }
-        // Asked for what it gave at a hotter flow, it could give more: its greatest output at that flow is the next guess.
-        let greatest_kw = system
-            .machine
-            .greatest_output_kw(cold, ask(given_kw).1.flow_c);
-        (warm, duty) = ask(greatest_kw.clamp(given_kw, wanted_kw));
+        duty = ask(given_kw);
+        // Asked for what it gave at a hotter flow, it could give more: its greatest output at this flow is the next guess.
+        let greatest_kw = system.machine.greatest_output_kw(cold, duty.flow_c);
+        duty = ask(greatest_kw.clamp(given_kw, wanted_kw));
         delivered = system.machine.deliver(cold, &duty);
     }
-    Balanced {
-        warm,
-        duty,
-        delivered,
-        too_cool,
+    (duty, delivered)
+}
+
+/// By how much the valves cool the return below that of the designed water flow, K.
+fn throttled_k(home: &Home, rooms: &Rooms, heat_kw: f64) -> f64 {
+    match home.emitters.control() {
+        Control::FollowingLoad => 0.0,
+        Control::Line { .. } | Control::Fixed(_) => {
+            let warm = home.emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
+            warm.water.flow_c - warm.water.return_c - warm.spread_k
+        }
     }
 }
 
