@@ -121,12 +121,12 @@ mod tests {
     fn heat_transfer_is_continuous_and_laminar_flow_is_poor() {
         let pipe = Pipe { outside_m: 0.04, wall_m: 0.0037, conductivity_w_per_m_k: 0.42 };
         let brine = Brine::new(Antifreeze::EthyleneGlycol, 0.25).unwrap().at(0.0);
-        let flows: Vec<_> = (5..200).map(|i| pipe.flow(f64::from(i) * 0.005, &brine)).collect();
+        let flows: Vec<_> = (25..1000).map(|i| pipe.flow(f64::from(i) * 0.001, &brine)).collect();
         for pair in flows.windows(2) {
             assert!(pair[1].resistance_m_k_per_w <= pair[0].resistance_m_k_per_w + 1e-12);
             assert!((pair[0].resistance_m_k_per_w - pair[1].resistance_m_k_per_w).abs() < 0.02);
         }
-        assert!(flows[0].reynolds < LAMINAR_BELOW && flows[194 - 1].reynolds > TURBULENT_FROM);
-        assert!(flows[0].resistance_m_k_per_w > 2.0 * flows[190].resistance_m_k_per_w);
+        assert!(flows[0].reynolds < LAMINAR_BELOW && flows[974].reynolds > TURBULENT_FROM);
+        assert!(flows[0].resistance_m_k_per_w > 2.0 * flows[974].resistance_m_k_per_w);
     }
 }
