@@ -3,7 +3,7 @@
 use std::collections::BTreeMap;
 
 use super::estimate::{
-    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };
 use crate::problem::{Finding, Problems, Severity};
 use crate::source::Memory;
@@ -36,7 +36,8 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
     let mut systems = Vec::with_capacity(outcomes.len());
     let mut break_evens = BTreeMap::new();
     for (i, (contender, outcome)) in case.contenders.iter().zip(outcomes).enumerate() {
-        let system = system(contender, outcome, outcomes, told.machines.get(i).cloned().flatten());
+        let mut system = system(contender, outcome, outcomes, told.machines.get(i).cloned().flatten());
+        system.ground = ground_shown(case, contender, outcome)?;
         findings.extend(cautions(&system, contender));
         if i > 0 {
             let levers = [Lever::ElectricityRate, Lever::FuelRate, Lever::FlowTemperature];
@@ -129,6 +130,7 @@ fn system(
         saving: compared(costs.total, today.costs.total),
         carbon_saving_kg: compared(sums.carbon_kg, today.mean_sums().carbon_kg),
         capital: contender.capital,
+        ground: None,
         monthly: (0..12)
             .map(|month0| {
                 let month = outcome.mean_month(month0);
@@ -147,6 +149,28 @@ fn system(
             .map(|(year, &cost)| YearAnswer { year: year.year, cost, spf_h4: year.sums.spf_h4() })
             .collect(),
     }
+}
+
+/// The year of a buried loop's life that is shown, beside its first.
+fn ground_shown(
+    case: &Case,
+    contender: &Contender,
+    outcome: &Outcome,
+) -> Result<Option<GroundShown>, Problems> {
+    let Some(aged) = contender.aged else { return Ok(None) };
+    let first = case.run_from(contender, Memory::default(), None)?;
+    let lowest = |outcome: &Outcome| {
+        let lowest_c = outcome.years.iter().map(|year| year.min_source_c).fold(f64::INFINITY, f64::min);
+        lowest_c.is_finite().then_some(lowest_c)
+    };
+    Ok(Some(GroundShown {
+        shown_year: aged.year,
+        lowest_brine_c: lowest(outcome),
+        hours_stopped: outcome.mean(|year| f64::from(year.hours_stopped)),
+        first_year_cost: first.costs.total,
+        first_year_spf_h4: first.mean_sums().spf_h4(),
+        first_year_lowest_brine_c: lowest(&first),
+    }))
 }
 
 fn balance_words(point: BalancePoint) -> String {
@@ -169,6 +193,18 @@ fn cautions(system: &SystemAnswer, contender: &Contender) -> Vec<Finding> {
                 system.hours_short, system.min_indoor_c
             ),
             "a larger machine, backup heat or larger emitters would be needed; size from a room-by-room heat-loss calculation by a competent person",
+        ));
+    }
+    if let Some(ground) = system.ground.as_ref().filter(|ground| ground.hours_stopped >= 0.5) {
+        cautions.push(Finding::new(
+            Severity::Caution,
+            format!(
+                "the machine of \"{label}\" stands in {:.0} hours of year {} of its loop because the brine is too cold for it; backup and immersion heater use {:.0} kWh",
+                ground.hours_stopped,
+                ground.shown_year,
+                system.backup_kwh.unwrap_or(0.0),
+            ),
+            "the loop is too short for this home and machine: see the command ground for the shortest one that would do",
         ));
     }
     let store = contender.system.home.hot_water.as_ref().and_then(|water| water.store);

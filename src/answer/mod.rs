@@ -3,9 +3,10 @@
 mod compose;
 pub mod cycle;
 mod estimate;
+pub mod ground;
 pub mod tariff;
 
 pub use compose::{Told, compose};
 pub use estimate::{
-    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };

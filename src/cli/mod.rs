@@ -8,6 +8,7 @@ mod cycle;
 mod estimate;
 mod failure;
 mod files;
+mod ground;
 mod output;
 mod tariff;
 
@@ -37,6 +38,7 @@ enum Command {
     Estimate(estimate::Args),
     Cycle(cycle::Args),
     Tariff(tariff::Args),
+    Ground(ground::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -53,5 +55,6 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
         Command::Estimate(args) => estimate::run(args),
         Command::Cycle(args) => cycle::run(args),
         Command::Tariff(args) => tariff::run(args),
+        Command::Ground(args) => ground::run(args),
     }
 }

@@ -5,6 +5,7 @@ mod balance;
 mod break_even;
 mod case;
 mod lever;
+mod loop_life;
 mod outcome;
 
 pub use ageing::{Aged, SHOWN_YEAR};
@@ -12,4 +13,5 @@ pub use balance::{BalancePoint, balance_point};
 pub use break_even::{BreakEven, Crossing, break_even};
 pub use case::{Account, Case, Contender};
 pub use lever::Lever;
+pub use loop_life::{BrineHour, LoopYear, NoShortest, ShortestLoop, loop_life, shortest_loop};
 pub use outcome::{Costs, Outcome, YearOutcome};

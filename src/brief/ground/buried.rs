@@ -5,7 +5,6 @@ use super::super::notes::Notes;
 use super::{BoreTable, Ground, TrenchTable, wave};
 use crate::bounds::{self, Bound};
 use crate::document::{Check, Leaf, Section};
-use crate::heatpump::{ColdSide, Duty, HeatPump};
 use crate::problem::{Finding, Severity};
 use crate::source::{
     AnnualSwing, Antifreeze, BRINE_C, Bore, Brine, BuriedLoop, Filling, HOURS_PER_YEAR, Layout, LoopDesign, Pipe,
@@ -416,22 +415,13 @@ fn flow_kg_per_s(brine: &Brine, ground: &Ground<'_>, check: &mut Check, notes: &
         return Some(flow.l_per_s() * properties.density_kg_per_m3 / 1000.0);
     }
     let spread_k = parse::<TemperatureDifference>(defaults::BRINE_SPREAD.value).ok()?.k();
-    let flow = rated_draw_kw(ground.machine?) / (properties.heat_capacity_kj_per_kg_k * spread_k);
+    let flow = ground.machine?.rated_draw_kw() / (properties.heat_capacity_kj_per_kg_k * spread_k);
     notes.add(
         defaults::BRINE_SPREAD.field,
         format!("{:.2} L/s", flow / properties.density_kg_per_m3 * 1000.0),
         format!("default: {}", defaults::BRINE_SPREAD.from),
     );
     Some(flow)
-}
-
-/// What a machine draws from its source at its rating point, kW.
-pub(super) fn rated_draw_kw(machine: &HeatPump) -> f64 {
-    let (open_c, flow_c) = machine.rated_condition();
-    let cold = ColdSide { open_c, k_per_kw: 0.0, relative_humidity: None };
-    let heat_kw = machine.rated_output_kw();
-    let duty = Duty { heat_kw, flow_c, spread_k: 5.0, hours: 1.0, at_full_output: true };
-    machine.deliver(&cold, &duty).extracted_kwh
 }
 
 fn pump(ground: &Ground<'_>, check: &mut Check, notes: &mut Notes) -> Option<Pump> {
