@@ -147,10 +147,11 @@ fn table(design: &LoopDesign, hours: usize) -> Vec<f64> {
     std::iter::once(0.0).chain((1..=hours).map(at)).collect()
 }
 
-/// methods §16: the yearly mean wall of a single bore falls about 1.5 K for each 10 W/m from year 1 to 25 (that of k about 1 to 2).
+/// methods §16: the yearly mean wall of a single bore falls about 1.5 K for each 10 W/m from year 1 to 25; at 2 W/(m K), the ground of
+/// the other values there.
 #[test]
 fn a_loop_is_not_judged_by_its_first_year() {
-    let soil = Soil { conductivity_w_per_m_k: 1.0, diffusivity_m2_per_s: 0.6e-6 };
+    let soil = Soil { conductivity_w_per_m_k: 2.0, diffusivity_m2_per_s: 1e-6 };
     let made = bores("one", soil).build(1).unwrap();
     let mut memory = Memory::default();
     let mut means = Vec::new();
@@ -163,11 +164,12 @@ fn a_loop_is_not_judged_by_its_first_year() {
         means.push(sum / 8760.0);
     }
     let fall_k = means[0] - means[24];
-    // The published figure is for a ground that is not stated: 1.5 K ± a third.
-    assert!((1.0..2.7).contains(&fall_k), "{fall_k}");
+    // Printed to two figures.
+    assert!((fall_k - 1.5).abs() < 0.06, "{fall_k}");
 }
 
-/// The closed first-order formula is pygfunction's first-order multipole solution; the tenth order differs by less than 1 %.
+/// The closed first-order formula is pygfunction's first-order multipole solution, which iterates to about 1e-8; the tenth order
+/// differs by less than 1 %.
 #[test]
 fn borehole_resistances_are_those_of_the_multipole_method() {
     let rows = rows("ground_resistances.csv");
@@ -178,8 +180,8 @@ fn borehole_resistances_are_those_of_the_multipole_method() {
         let tube = UTube { bore_radius_m: v[0], pipe, spacing_m: v[2], grout_w_per_m_k: v[4] };
         let local = tube.local_resistance(v[3], v[5]);
         let internal = tube.internal_resistance(v[3], v[5]);
-        assert!((local / v[6] - 1.0).abs() < 1e-9, "{row:?} {local}");
-        assert!((internal / v[7] - 1.0).abs() < 1e-9, "{row:?} {internal}");
+        assert!((local / v[6] - 1.0).abs() < 1e-7, "{row:?} {local}");
+        assert!((internal / v[7] - 1.0).abs() < 1e-7, "{row:?} {internal}");
         assert!((local / v[8] - 1.0).abs() < 0.01 && (internal / v[9] - 1.0).abs() < 0.01, "{row:?}");
     }
 }
@@ -199,7 +201,10 @@ fn friction_and_film_are_those_of_another_library() {
         let flow = pipe.flow(number(&row[0]), &brine);
         // Both iterate the Colebrook equation to 1e-6 or better.
         assert!((flow.pascal_per_m / number(&row[1]) - 1.0).abs() < 1e-5, "{row:?} {flow:?}");
-        assert!((flow.resistance_m_k_per_w / number(&row[2]) - 1.0).abs() < 1e-5, "{row:?} {flow:?}");
+        // Between laminar and turbulent the library takes the friction of the flow itself where Gnielinski 2013 takes that at
+        // Reynolds number 4000.
+        let tolerance = if (2300.0..4000.0).contains(&flow.reynolds) { 0.025 } else { 1e-5 };
+        assert!((flow.resistance_m_k_per_w / number(&row[2]) - 1.0).abs() < tolerance, "{row:?} {flow:?}");
     }
 }
 
@@ -213,7 +218,7 @@ fn brine_properties_agree_with_two_collections() {
             if row[0] == "ethylene glycol" { Antifreeze::EthyleneGlycol } else { Antifreeze::PropyleneGlycol };
         let brine = Brine::new(antifreeze, number(&row[1])).unwrap();
         let at = brine.at(number(&row[3]));
-        let own = row[2].ends_with('2');
+        let own = !row[2].ends_with('2');
         let [density, heat, viscosity, conductivity] =
             if own { [2e-4, 2e-4, 2e-3, 2e-3] } else { [0.004, 0.035, 0.08, 0.02] };
         let near = |found: f64, text: &str, tolerance: f64| {

@@ -134,7 +134,7 @@ def pipes():
 
 
 def brines():
-    """Two sets of data: Melinder's own polynomials (MEG2, MPG2) and those of another collection (MEG, MPG), both in CoolProp."""
+    """Two sets of data: Melinder's polynomials (MEG, MPG) and those of another collection (MEG2, MPG2), both in CoolProp."""
     rows = []
     for fluid, name in (("ethylene glycol", "MEG"), ("propylene glycol", "MPG")):
         for share in (0.15, 0.25, 0.35, 0.45):
