@@ -7,7 +7,8 @@ use std::path::Path;
 use divan::{Bencher, black_box};
 use winterledger::brief::Brief;
 use winterledger::source::{
-    AnnualSwing, Antifreeze, Bore, Brine, BuriedLoop, Filling, Layout, LoopDesign, Memory, Pipe, Pump, Soil,
+    AnnualSwing, Antifreeze, Bore, Brine, BuriedLoop, Filling, Layout, LoopDesign, Memory, Pipe,
+    Pump, Soil,
 };
 use winterledger::study::{loop_life, shortest_loop};
 
@@ -16,7 +17,9 @@ const LIFE: usize = 25 * 8760;
 
 fn main() {
     match accuracy_k() {
-        Some(worst) => println!("memory against exact convolution, 25 years of four bores: {worst:.5} K at most"),
+        Some(worst) => println!(
+            "memory against exact convolution, 25 years of four bores: {worst:.5} K at most"
+        ),
         None => eprintln!("the loop cannot be made"),
     }
     divan::main();
@@ -24,13 +27,34 @@ fn main() {
 
 fn four_bores() -> LoopDesign {
     let places = [(0.0, 0.0), (0.0, 6.0), (6.0, 0.0), (6.0, 6.0)];
-    let bores =
-        places.map(|(x_m, y_m)| Bore { x_m, y_m, depth_m: 100.0, buried_m: 1.0, radius_m: 0.065 }).to_vec();
+    let bores = places
+        .map(|(x_m, y_m)| Bore {
+            x_m,
+            y_m,
+            depth_m: 100.0,
+            buried_m: 1.0,
+            radius_m: 0.065,
+        })
+        .to_vec();
     LoopDesign {
-        layout: Layout::Bores { bores, filling: Filling::Resistance(0.1) },
-        pipe: Pipe { outside_m: 0.04, wall_m: 0.0037, conductivity_w_per_m_k: 0.42 },
-        soil: Soil { conductivity_w_per_m_k: 2.0, diffusivity_m2_per_s: 0.9e-6 },
-        surface: AnnualSwing { mean_c: 10.0, amplitude_k: 8.0, coldest_hour: 600.0 },
+        layout: Layout::Bores {
+            bores,
+            filling: Filling::Resistance(0.1),
+        },
+        pipe: Pipe {
+            outside_m: 0.04,
+            wall_m: 0.0037,
+            conductivity_w_per_m_k: 0.42,
+        },
+        soil: Soil {
+            conductivity_w_per_m_k: 2.0,
+            diffusivity_m2_per_s: 0.9e-6,
+        },
+        surface: AnnualSwing {
+            mean_c: 10.0,
+            amplitude_k: 8.0,
+            coldest_hour: 600.0,
+        },
         gradient_k_per_m: 0.03,
         brine: Brine::new(Antifreeze::EthyleneGlycol, 0.3).unwrap_or_else(|| unreachable_brine()),
         flow_kg_per_s: 1.6,
@@ -70,8 +94,9 @@ fn accuracy_k() -> Option<f64> {
     for hour in 0..LIFE {
         made.drawn(hour, draw_kw(hour), &mut memory);
         if hour % 1097 == 0 {
-            let exact: f64 =
-                (0..=hour).map(|past| draw_kw(past) * (table[hour - past + 1] - table[hour - past])).sum();
+            let exact: f64 = (0..=hour)
+                .map(|past| draw_kw(past) * (table[hour - past + 1] - table[hour - past]))
+                .sum();
             let fall = made.undisturbed_c(0) - made.wall_c(0, &memory);
             worst = worst.max((fall - exact * 1000.0 / made.length_m()).abs());
         }
@@ -88,7 +113,9 @@ fn make_four_bores(bencher: Bencher) {
 /// Offer and memory alone: what the ground adds to a run.
 #[divan::bench]
 fn ground_alone_25_years(bencher: Bencher) {
-    let Ok(made) = four_bores().build(8760) else { return };
+    let Ok(made) = four_bores().build(8760) else {
+        return;
+    };
     bencher.bench(|| {
         let mut memory = Memory::default();
         let mut sum = 0.0;

@@ -4,6 +4,7 @@
 use std::fs;
 use std::path::Path;
 
+use proptest::prelude::*;
 use winterledger::bill::{self, Connection};
 use winterledger::calendar::HourAxis;
 use winterledger::tariff::Tariff;
@@ -61,4 +62,51 @@ fn a_price_series_that_ends_early_is_refused_for_the_year() {
          allowed: a price for every hour; the file covers 2023-01-01 00:00 UTC to 2023-01-03 00:00 UTC\n  \
          remedy:  give prices for the same year as the weather, or set every_year = true to use one year's prices for any"
     );
+}
+
+/// The examples, for breaking.
+fn texts() -> Vec<String> {
+    let folder = Path::new(env!("CARGO_MANIFEST_DIR")).join("tariffs");
+    let files = fs::read_dir(folder)
+        .unwrap()
+        .map(|entry| entry.unwrap().path());
+    let tariffs = files.filter(|path| {
+        path.extension()
+            .is_some_and(|extension| extension == "toml")
+    });
+    tariffs
+        .map(|path| fs::read_to_string(path).unwrap())
+        .collect()
+}
+
+proptest! {
+    /// An example with a line lost, doubled or a piece of it replaced is read or refused, and never panics.
+    #[test]
+    fn a_broken_example_is_read_or_refused(which in 0usize..64, line in 0usize..40, at in 0usize..40, junk in "[-0-9a-zé:/.\"\\[\\]= ]{0,6}", kind in 0..3) {
+        let texts = texts();
+        let text = &texts[which % texts.len()];
+        let mut lines: Vec<String> = text.lines().map(str::to_owned).collect();
+        let line = line % lines.len();
+        match kind {
+            0 => { lines.remove(line); }
+            1 => { let copy = lines[line].clone(); lines.insert(line, copy); }
+            _ => {
+                let mut letters: Vec<char> = lines[line].chars().collect();
+                let at = at.min(letters.len());
+                let end = (at + 3).min(letters.len());
+                letters.splice(at..end, junk.chars());
+                lines[line] = letters.into_iter().collect();
+            }
+        }
+        match Tariff::from_text("x.toml", &lines.join("\n"), Path::new("nowhere")) {
+            Ok(tariff) => {
+                let civil = HourAxis::civil_year(2024, chrono_tz::Tz::UTC).unwrap().civil(chrono_tz::Tz::UTC);
+                if let Ok(bill) = bill::price(&tariff, &civil, &vec![1.0; civil.len()], Connection::Kept) {
+                    let months: rust_decimal::Decimal = bill.months.iter().map(|month| month.amount).sum();
+                    prop_assert_eq!(months, bill.total());
+                }
+            }
+            Err(problems) => prop_assert!(!problems.is_empty()),
+        }
+    }
 }

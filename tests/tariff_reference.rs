@@ -1,4 +1,4 @@
-//! Bands over both clock changes against `tests/reference/tariff_bands.py`, an independent computation with pandas.
+//! Currencies against OpenJDK's table of ISO 4217 (`tests/reference/tariff_currencies.java`); bands over both clock changes against `tests/reference/tariff_bands.py`, an independent computation with pandas.
 
 use std::collections::BTreeMap;
 use std::path::Path;
@@ -7,6 +7,7 @@ use rust_decimal::prelude::ToPrimitive;
 use winterledger::bill::{self, Connection};
 use winterledger::calendar::HourAxis;
 use winterledger::tariff::{Span, Tariff};
+use winterledger::units::Currency;
 
 /// Energy and cost by month from 0, or by year (month 0), and band.
 type Sums = BTreeMap<(usize, String), (f64, f64)>;
@@ -99,4 +100,21 @@ fn seasons_weekdays_and_holidays_month_by_month_in_paris() {
 fn clocks_half_an_hour_off_over_the_year() {
     check("cheap_night_electricity", "Australia/Adelaide", Span::Year);
     check("seasonal_electricity", "America/St_Johns", Span::Year);
+}
+
+#[test]
+fn currencies_and_their_digits_are_those_of_iso_4217() {
+    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("tests/reference/tariff_currencies.csv");
+    let mut reader = csv::Reader::from_path(path).unwrap();
+    let mut known = 0;
+    for row in reader.records().map(Result::unwrap) {
+        let currency = Currency::parse(&row[0]).unwrap();
+        assert_eq!(currency.minor_digits().to_string(), row[1], "{currency}");
+        known += 1;
+    }
+    assert_eq!(known, 155);
+    // Withdrawn, metals and testing codes are none that a household pays in.
+    for code in ["DEM", "FRF", "XAU", "XTS", "gbp", ""] {
+        assert!(Currency::parse(code).is_err(), "{code}");
+    }
 }

@@ -20,8 +20,13 @@ pub enum AirError {
 impl fmt::Display for AirError {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         match self {
-            Self::Temperature(c) => write!(f, "{c} °C is outside -100 to 200 °C, where moist air is described"),
-            Self::RelativeHumidity(share) => write!(f, "a relative humidity of {share} is outside 0 to 1"),
+            Self::Temperature(c) => write!(
+                f,
+                "{c} °C is outside -100 to 200 °C, where moist air is described"
+            ),
+            Self::RelativeHumidity(share) => {
+                write!(f, "a relative humidity of {share} is outside 0 to 1")
+            }
             Self::Pressure(pa) => write!(f, "{pa} Pa is not above the pressure of the vapour"),
             Self::VapourPressure(pa) => write!(f, "a vapour pressure of {pa} Pa has no dew point"),
             Self::NotConverged(c) => write!(f, "the iteration from {c} °C did not settle"),

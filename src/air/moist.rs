@@ -1,7 +1,7 @@
 //! One state of moist air.
 
-use super::saturation::{dew_point_c, saturation_in_range_pa, saturation_pressure_pa};
 use super::AirError;
+use super::saturation::{dew_point_c, saturation_in_range_pa, saturation_pressure_pa};
 
 /// Molar mass of water over that of dry air (ASHRAE Fundamentals 2017, chapter 1, equation 20).
 const MASS_RATIO: f64 = 0.621_945;
@@ -32,7 +32,11 @@ impl MoistAir {
     /// assert!(MoistAir::new(2.0, 85.0, SEA_LEVEL_PA).is_err());
     /// # Ok::<(), winterledger::air::AirError>(())
     /// ```
-    pub fn new(temperature_c: f64, relative_humidity: f64, pressure_pa: f64) -> Result<Self, AirError> {
+    pub fn new(
+        temperature_c: f64,
+        relative_humidity: f64,
+        pressure_pa: f64,
+    ) -> Result<Self, AirError> {
         let saturated = saturation_pressure_pa(temperature_c)?;
         if !(0.0..=1.0).contains(&relative_humidity) {
             return Err(AirError::RelativeHumidity(relative_humidity));
@@ -94,7 +98,11 @@ impl MoistAir {
         let wanted = self.humidity_ratio();
         let dry = self.temperature_c;
         let over_water = dry > 0.0 && wanted >= self.ratio_at_wet_bulb(0.0, true);
-        let (mut low, mut high) = if over_water { (dew.max(0.0), dry) } else { (dew, dry.min(0.0)) };
+        let (mut low, mut high) = if over_water {
+            (dew.max(0.0), dry)
+        } else {
+            (dew, dry.min(0.0))
+        };
         let excess = |wet: f64| self.ratio_at_wet_bulb(wet, over_water) - wanted;
         let (mut at_low, mut at_high) = (excess(low), excess(high));
         if at_low >= 0.0 {
@@ -111,7 +119,11 @@ impl MoistAir {
             if at_guess == 0.0 {
                 return Ok(guess);
             }
-            let moved = if at_guess < 0.0 { guess - low } else { high - guess };
+            let moved = if at_guess < 0.0 {
+                guess - low
+            } else {
+                high - guess
+            };
             if at_guess < 0.0 {
                 (low, at_low) = (guess, at_guess);
                 if stayed == -1 {
@@ -161,16 +173,31 @@ mod tests {
         for c in [-15.0, -0.5, 0.0, 3.0, 20.0] {
             let air = MoistAir::new(c, 1.0, SEA_LEVEL_PA).unwrap();
             assert!((air.dew_point_c().unwrap() - c).abs() < 1e-5, "{c}");
-            assert!((air.wet_bulb_c().unwrap() - c).abs() < 1e-4, "{c} {}", air.wet_bulb_c().unwrap());
+            assert!(
+                (air.wet_bulb_c().unwrap() - c).abs() < 1e-4,
+                "{c} {}",
+                air.wet_bulb_c().unwrap()
+            );
         }
     }
 
     #[test]
     fn what_cannot_be_is_refused() {
-        assert_eq!(MoistAir::new(20.0, 1.1, SEA_LEVEL_PA), Err(AirError::RelativeHumidity(1.1)));
-        assert_eq!(MoistAir::new(120.0, 0.5, SEA_LEVEL_PA), Err(AirError::Pressure(SEA_LEVEL_PA)));
+        assert_eq!(
+            MoistAir::new(20.0, 1.1, SEA_LEVEL_PA),
+            Err(AirError::RelativeHumidity(1.1))
+        );
+        assert_eq!(
+            MoistAir::new(120.0, 0.5, SEA_LEVEL_PA),
+            Err(AirError::Pressure(SEA_LEVEL_PA))
+        );
         assert!(MoistAir::new(f64::NAN, 0.5, SEA_LEVEL_PA).is_err());
-        assert!(MoistAir::new(20.0, 0.0, SEA_LEVEL_PA).unwrap().dew_point_c().is_err());
+        assert!(
+            MoistAir::new(20.0, 0.0, SEA_LEVEL_PA)
+                .unwrap()
+                .dew_point_c()
+                .is_err()
+        );
     }
 
     proptest! {

@@ -38,7 +38,11 @@ const WATER: Coefficients = [
 ];
 
 fn coefficients(temperature_c: f64) -> &'static Coefficients {
-    if temperature_c <= TRIPLE_POINT_C { &ICE } else { &WATER }
+    if temperature_c <= TRIPLE_POINT_C {
+        &ICE
+    } else {
+        &WATER
+    }
 }
 
 /// ln of the saturation pressure, and its slope per kelvin.
@@ -83,7 +87,10 @@ pub fn saturation_pressure_pa(temperature_c: f64) -> Result<f64, AirError> {
 /// [`AirError::VapourPressure`] where no dew point lies between −100 and 200 °C, [`AirError::NotConverged`] should the
 /// iteration not settle.
 pub fn dew_point_c(vapour_pressure_pa: f64) -> Result<f64, AirError> {
-    let (low, high) = (saturation_in_range_pa(*RANGE_C.start()), saturation_in_range_pa(*RANGE_C.end()));
+    let (low, high) = (
+        saturation_in_range_pa(*RANGE_C.start()),
+        saturation_in_range_pa(*RANGE_C.end()),
+    );
     if !(low..=high).contains(&vapour_pressure_pa) {
         return Err(AirError::VapourPressure(vapour_pressure_pa));
     }
@@ -104,7 +111,10 @@ pub fn dew_point_c(vapour_pressure_pa: f64) -> Result<f64, AirError> {
 ///
 /// # Errors
 /// [`AirError::Temperature`] where either is out of range.
-pub fn relative_humidity_at_dew_point(temperature_c: f64, dew_point_c: f64) -> Result<f64, AirError> {
+pub fn relative_humidity_at_dew_point(
+    temperature_c: f64,
+    dew_point_c: f64,
+) -> Result<f64, AirError> {
     let vapour = saturation_pressure_pa(dew_point_c)?;
     let saturated = saturation_pressure_pa(temperature_c)?;
     Ok((vapour / saturated).min(1.0))
@@ -119,7 +129,12 @@ mod tests {
     /// 103.2 Pa. The equations are older: 0.1 % is what the handbook's own table keeps.
     #[test]
     fn saturation_agrees_with_the_steam_tables() {
-        for (c, pa) in [(0.01, 611.657), (100.0, 101_418.0), (-20.0, 103.24), (20.0, 2339.2)] {
+        for (c, pa) in [
+            (0.01, 611.657),
+            (100.0, 101_418.0),
+            (-20.0, 103.24),
+            (20.0, 2339.2),
+        ] {
             let found = saturation_pressure_pa(c).unwrap();
             assert!((found / pa - 1.0).abs() < 1e-3, "{c} °C: {found}");
         }
@@ -127,7 +142,10 @@ mod tests {
 
     #[test]
     fn outside_the_range_is_refused() {
-        assert_eq!(saturation_pressure_pa(-100.1), Err(AirError::Temperature(-100.1)));
+        assert_eq!(
+            saturation_pressure_pa(-100.1),
+            Err(AirError::Temperature(-100.1))
+        );
         assert!(saturation_pressure_pa(f64::NAN).is_err());
         assert_eq!(dew_point_c(0.0), Err(AirError::VapourPressure(0.0)));
         assert!(dew_point_c(f64::NAN).is_err());

@@ -3,11 +3,14 @@
 use std::collections::BTreeMap;
 
 use super::estimate::{
-    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer,
+    WeatherUsed, YearAnswer,
 };
 use crate::problem::{Finding, Problems, Severity};
 use crate::source::Memory;
-use crate::study::{BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even};
+use crate::study::{
+    BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even,
+};
 use crate::year::Heating;
 
 /// What an estimate tells beside the figures of its case.
@@ -33,14 +36,25 @@ pub struct Told {
 /// When a case cannot be run with a lever moved.
 pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimate, Problems> {
     let mut findings = told.findings.clone();
+    findings.extend(cool_stores(case));
     let mut systems = Vec::with_capacity(outcomes.len());
     let mut break_evens = BTreeMap::new();
     for (i, (contender, outcome)) in case.contenders.iter().zip(outcomes).enumerate() {
-        let mut system = system(contender, outcome, outcomes, told.machines.get(i).cloned().flatten());
+        let mut system = system(
+            contender,
+            outcome,
+            outcomes,
+            told.machines.get(i).cloned().flatten(),
+        );
         system.ground = ground_shown(case, contender, outcome)?;
-        findings.extend(cautions(&system, contender));
+        findings.extend(left_cold(&system));
+        findings.extend(source_too_cold(&system));
         if i > 0 {
-            let levers = [Lever::ElectricityRate, Lever::FuelRate, Lever::FlowTemperature];
+            let levers = [
+                Lever::ElectricityRate,
+                Lever::FuelRate,
+                Lever::FlowTemperature,
+            ];
             let mut answers = Vec::new();
             for lever in levers {
                 if let Some(found) = break_even(case, outcomes, i, lever)? {
@@ -87,11 +101,17 @@ fn system(
     let sums = outcome.mean_sums();
     let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
     let burns_fuel = matches!(contender.system.heating, Heating::Boiler { .. });
-    let ground = contender.aged.map_or_else(Memory::default, |aged| aged.memory);
+    let ground = contender
+        .aged
+        .map_or_else(Memory::default, |aged| aged.memory);
     let balance = |with_hot_water| match &contender.system.heating {
-        Heating::HeatPump(machine) => {
-            balance_point(&contender.system, machine, contender.indoor_c, with_hot_water, ground)
-        }
+        Heating::HeatPump(machine) => balance_point(
+            &contender.system,
+            machine,
+            contender.indoor_c,
+            with_hot_water,
+            ground,
+        ),
         _ => None,
     };
     let balance_points = (balance(false), balance(true));
@@ -117,10 +137,18 @@ fn system(
         balance_point_c: balance_points.0.and_then(BalancePoint::c),
         balance_point_with_hot_water_c: balance_points.1.and_then(BalancePoint::c),
         balance_point: balance_points.0.map(balance_words),
-        peak_electric_kw: outcome.years.iter().map(|year| year.peak_electric_kw).fold(0.0, f64::max),
+        peak_electric_kw: outcome
+            .years
+            .iter()
+            .map(|year| year.peak_electric_kw)
+            .fold(0.0, f64::max),
         hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
         hours_short: outcome.mean(|year| f64::from(year.hours_short)),
-        min_indoor_c: outcome.years.iter().map(|year| year.min_indoor_c).fold(f64::INFINITY, f64::min),
+        min_indoor_c: outcome
+            .years
+            .iter()
+            .map(|year| year.min_indoor_c)
+            .fold(f64::INFINITY, f64::min),
         starts: is_machine.then_some(sums.starts),
         cost: costs.total,
         cost_energy: costs.energy,
@@ -146,7 +174,11 @@ fn system(
             .years
             .iter()
             .zip(&costs.by_year)
-            .map(|(year, &cost)| YearAnswer { year: year.year, cost, spf_h4: year.sums.spf_h4() })
+            .map(|(year, &cost)| YearAnswer {
+                year: year.year,
+                cost,
+                spf_h4: year.sums.spf_h4(),
+            })
             .collect(),
     }
 }
@@ -157,10 +189,16 @@ fn ground_shown(
     contender: &Contender,
     outcome: &Outcome,
 ) -> Result<Option<GroundShown>, Problems> {
-    let Some(aged) = contender.aged else { return Ok(None) };
+    let Some(aged) = contender.aged else {
+        return Ok(None);
+    };
     let first = case.run_from(contender, Memory::default(), None)?;
     let lowest = |outcome: &Outcome| {
-        let lowest_c = outcome.years.iter().map(|year| year.min_source_c).fold(f64::INFINITY, f64::min);
+        let lowest_c = outcome
+            .years
+            .iter()
+            .map(|year| year.min_source_c)
+            .fold(f64::INFINITY, f64::min);
         lowest_c.is_finite().then_some(lowest_c)
     };
     Ok(Some(GroundShown {
@@ -177,91 +215,141 @@ fn balance_words(point: BalancePoint) -> String {
     match point {
         BalancePoint::At(c) => format!("{c:.1} °C"),
         BalancePoint::BelowRange(c) => format!("below {c:.0} °C"),
-        BalancePoint::AboveRange(c) => format!("above {c:.0} °C: the machine never carries the load"),
+        BalancePoint::AboveRange(c) => {
+            format!("above {c:.0} °C: the machine never carries the load")
+        }
     }
 }
 
-/// What someone could be hurt or left cold by.
-fn cautions(system: &SystemAnswer, contender: &Contender) -> Vec<Finding> {
-    let mut cautions = Vec::new();
-    let label = &system.label;
-    if system.hours_short >= 0.5 {
-        cautions.push(Finding::new(
+/// Rooms that a system leaves cold.
+fn left_cold(system: &SystemAnswer) -> Option<Finding> {
+    (system.hours_short >= 0.5).then(|| {
+        Finding::new(
             Severity::Caution,
             format!(
-                "\"{label}\" leaves the rooms more than 1 K below the set point in {:.0} hours a year, down to {:.1} °C",
-                system.hours_short, system.min_indoor_c
+                "\"{}\" leaves the rooms more than 1 K below the set point in {:.0} hours a year, down to {:.1} °C",
+                system.label, system.hours_short, system.min_indoor_c
             ),
             "a larger machine, backup heat or larger emitters would be needed; size from a room-by-room heat-loss calculation by a competent person",
-        ));
-    }
-    if let Some(ground) = system.ground.as_ref().filter(|ground| ground.hours_stopped >= 0.5) {
-        cautions.push(Finding::new(
-            Severity::Caution,
-            format!(
-                "the machine of \"{label}\" stands in {:.0} hours of year {} of its loop because the brine is too cold for it; backup and immersion heater use {:.0} kWh",
-                ground.hours_stopped,
-                ground.shown_year,
-                system.backup_kwh.unwrap_or(0.0),
-            ),
-            "the loop is too short for this home and machine: see the command ground for the shortest one that would do",
-        ));
-    }
-    let store = contender.system.home.hot_water.as_ref().and_then(|water| water.store);
-    /// UK HSE guidance: stored hot water at 60 °C, arriving at the taps at no less than 50 °C within a minute.
+        )
+    })
+}
+
+/// A loop too short for its machine.
+fn source_too_cold(system: &SystemAnswer) -> Option<Finding> {
+    let ground = system
+        .ground
+        .as_ref()
+        .filter(|ground| ground.hours_stopped >= 0.5)?;
+    Some(Finding::new(
+        Severity::Caution,
+        format!(
+            "the machine of \"{}\" stands in {:.0} hours of year {} of its loop because the brine is too cold for it; backup and immersion heater use {:.0} kWh",
+            system.label,
+            ground.hours_stopped,
+            ground.shown_year,
+            system.backup_kwh.unwrap_or(0.0),
+        ),
+        "the loop is too short for this home and machine: see the command ground for the shortest one that would do",
+    ))
+}
+
+/// Stored hot water below the temperature of UK HSE guidance: 60 °C in the store, at the taps no less than 50 °C within a minute.
+fn cool_stores(case: &Case) -> Option<Finding> {
     const HYGIENE_C: f64 = 60.0;
-    if let Some(store) = store
-        && store.set_point_c < HYGIENE_C
-    {
-        cautions.push(Finding::new(
+    let cool: Vec<_> = case
+        .contenders
+        .iter()
+        .filter(|contender| {
+            let store = contender
+                .system
+                .home
+                .hot_water
+                .as_ref()
+                .and_then(|water| water.store);
+            store.is_some_and(|store| store.set_point_c < HYGIENE_C)
+        })
+        .map(|contender| format!("\"{}\"", contender.system.label))
+        .collect();
+    (!cool.is_empty()).then(|| {
+        Finding::new(
             Severity::Caution,
-            format!("\"{label}\" keeps hot water at {:.0} °C", store.set_point_c),
-            "below 60 °C legionella can grow: a regular hygiene cycle is usual, and water above 50 °C scalds; follow local rules and a licensed installer",
-        ));
-    }
-    cautions
+            format!("hot water is stored below {HYGIENE_C:.0} °C by {}", cool.join(", ")),
+            "legionella can grow there, so a regular hygiene cycle is usual, and water above 50 °C scalds; follow local rules and a licensed installer",
+        )
+    })
 }
 
 fn lever_answer(found: &BreakEven, label: &str) -> LeverAnswer {
     let bound = found.lever.bound();
+    let conditions: Vec<_> = found
+        .crossings
+        .iter()
+        .map(|crossing| condition(found, crossing.value))
+        .collect();
+    let sentence = match conditions.as_slice() {
+        [] => format!(
+            "No {} makes \"{label}\" cost what today's system costs.",
+            bound.words()
+        ),
+        _ => {
+            let sides = found
+                .crossings
+                .iter()
+                .zip(&conditions)
+                .map(|(crossing, condition)| {
+                    let side = if crossing.cheaper_above {
+                        "above"
+                    } else {
+                        "below"
+                    };
+                    format!("{condition}; {side} that it is the cheaper one")
+                });
+            let sides: Vec<_> = sides.collect();
+            format!(
+                "\"{label}\" breaks even with {}.",
+                sides.join(", and again with ")
+            )
+        }
+    };
     LeverAnswer {
         lever: bound.label.to_owned(),
         unit: bound.unit.to_owned(),
         now: found.now,
-        values: found.crossings.iter().map(|crossing| crossing.value).collect(),
+        values: found
+            .crossings
+            .iter()
+            .map(|crossing| crossing.value)
+            .collect(),
         between: [bound.low, bound.high],
-        sentence: sentence(found, label),
+        conditions,
+        sentence,
     }
 }
 
-fn sentence(found: &BreakEven, label: &str) -> String {
-    let bound = found.lever.bound();
-    let amount = |value: f64| match found.lever {
-        Lever::ElectricityRate | Lever::FuelRate | Lever::HeatLoss => {
-            let percent = (value - 1.0) * 100.0;
-            if percent >= 0.0 {
-                format!("{percent:.0} % higher than now")
-            } else {
-                format!("{:.0} % lower than now", -percent)
-            }
-        }
-        Lever::FlowTemperature => format!("{value:.0} °C (now {:.0} °C)", found.now),
-        Lever::FieldFactor => format!("{value:.2} (now {:.2})", found.now),
+/// A value of a lever as it is said aloud.
+fn condition(found: &BreakEven, value: f64) -> String {
+    let compared = |what: &str, more: &str, less: &str| {
+        let percent = (value - 1.0) * 100.0;
+        format!(
+            "{what} {:.0} % {}",
+            percent.abs(),
+            if percent >= 0.0 { more } else { less }
+        )
     };
-    match found.crossings.as_slice() {
-        [] => format!(
-            "No {} between {} and {} {} makes \"{label}\" cost what today's system costs.",
-            bound.label, bound.low, bound.high, bound.unit
-        ),
-        crossings => {
-            let parts: Vec<_> = crossings
-                .iter()
-                .map(|crossing| {
-                    let side = if crossing.cheaper_above { "above" } else { "below" };
-                    format!("{} and is cheaper {side} it", amount(crossing.value))
-                })
-                .collect();
-            format!("\"{label}\" breaks even at a {} of {}.", bound.label, parts.join("; and again at "))
+    match found.lever {
+        Lever::ElectricityRate => compared("electricity", "dearer", "cheaper"),
+        Lever::FuelRate => compared("gas", "dearer", "cheaper"),
+        Lever::HeatLoss => compared("a heat loss", "larger", "smaller"),
+        Lever::FlowTemperature => {
+            format!("a design flow of {value:.0} °C (now {:.0} °C)", found.now)
+        }
+        Lever::FieldFactor => {
+            let percent = value * 100.0;
+            format!(
+                "{percent:.0} % of laboratory performance (now {:.0} %)",
+                found.now * 100.0
+            )
         }
     }
 }

@@ -126,8 +126,9 @@ pub struct SystemAnswer {
     pub cost_energy: f64,
     /// Standing and demand charges of it, before tax that is added.
     pub cost_standing: f64,
-    /// Tax of it that is added.
-    pub cost_tax: f64,
+    /// Tax of it that is added; absent where the rates hold the tax already.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub cost_tax: Option<f64>,
     /// Greenhouse gas, CO2 equivalent.
     pub carbon_kg: f64,
     /// Today's cost less this; absent for today's system.
@@ -207,6 +208,8 @@ pub struct LeverAnswer {
     pub values: Vec<f64>,
     /// The range that was looked at.
     pub between: [f64; 2],
+    /// Each value in words: "electricity 4 % cheaper".
+    pub conditions: Vec<String>,
     /// The same as a sentence.
     pub sentence: String,
 }

@@ -163,7 +163,9 @@ pub fn ground_answer(
     life: &[LoopYear],
     shortest: Option<Result<ShortestLoop, NoShortest>>,
 ) -> Option<GroundAnswer> {
-    let Heating::HeatPump(machine) = &contender.system.heating else { return None };
+    let Heating::HeatPump(machine) = &contender.system.heating else {
+        return None;
+    };
     let (kind, column) = match &machine.source {
         Source::OutdoorAir => return None,
         Source::Ground(ground) => ("quick loop", &ground.undisturbed_c[..]),
@@ -184,13 +186,20 @@ pub fn ground_answer(
         Some(Err(NoShortest::BelowFloorAt(length_m))) => {
             findings.push(Finding::new(
                 Severity::Warning,
-                format!("even {length_m:.0} m of loop let the brine of \"{}\" fall below the floor", contender.system.label),
+                format!(
+                    "even {length_m:.0} m of loop let the brine of \"{}\" fall below the floor",
+                    contender.system.label
+                ),
                 "the ground is too cold or the floor too high",
             ));
             None
         }
         Some(Err(NoShortest::Response(error))) => {
-            findings.push(Finding::new(Severity::Warning, "the shortest loop could not be found", error.why));
+            findings.push(Finding::new(
+                Severity::Warning,
+                "the shortest loop could not be found",
+                error.why,
+            ));
             None
         }
         Some(Err(NoShortest::NotBuried)) | None => None,
@@ -205,7 +214,10 @@ pub fn ground_answer(
             .filter(|year| REPORTED.contains(&year.year) || year.year == last)
             .map(year_answer)
             .collect(),
-        lowest_brine_c: life.iter().map(|year| year.coldest.map(|hour| hour.entering_c)).collect(),
+        lowest_brine_c: life
+            .iter()
+            .map(|year| year.coldest.map(|hour| hour.entering_c))
+            .collect(),
         buried: buried.map(|buried| buried_answer(machine, buried, life)),
         sizing,
         findings,
@@ -214,12 +226,19 @@ pub fn ground_answer(
 }
 
 fn g_function(buried: &BuriedLoop, years: u32) -> Vec<GValue> {
-    let at: Vec<_> = G_YEARS.iter().copied().filter(|at| *at <= f64::from(years)).collect();
+    let at: Vec<_> = G_YEARS
+        .iter()
+        .copied()
+        .filter(|at| *at <= f64::from(years))
+        .collect();
     let hours: Vec<_> = at.iter().map(|years| years * 8760.0).collect();
     let unit = TAU * buried.design.soil.conductivity_w_per_m_k;
     at.iter()
         .zip(buried.design.wall_response(&hours))
-        .map(|(&years, value)| GValue { years, value: value * unit })
+        .map(|(&years, value)| GValue {
+            years,
+            value: value * unit,
+        })
         .collect()
 }
 
@@ -248,7 +267,10 @@ fn year_answer(year: &LoopYear) -> GroundYear {
 }
 
 fn buried_answer(machine: &MachineSystem, buried: &BuriedLoop, life: &[LoopYear]) -> BuriedAnswer {
-    let greatest_kw = life.iter().map(|year| year.greatest_draw_kw).fold(0.0, f64::max);
+    let greatest_kw = life
+        .iter()
+        .map(|year| year.greatest_draw_kw)
+        .fold(0.0, f64::max);
     let (valid_from_h, error_k) = buried.early(greatest_kw);
     BuriedAnswer {
         length_m: buried.length_m(),
@@ -269,18 +291,27 @@ fn sizing(machine: &MachineSystem, buried: &BuriedLoop, found: &ShortestLoop) ->
     let full_load_hours = found.year.sums.extracted_kwh / draw_kw;
     let soil = buried.design.soil;
     let rule = match buried.design.layout {
-        Layout::Bores { .. } => Some(
-            SOILS
-                .iter()
-                .find(|class| class.soil() == soil)
-                .map_or_else(|| RuleOfThumb::by_conductivity(soil.conductivity_w_per_m_k), |class| class.rule_of_thumb),
-        ),
+        Layout::Bores { .. } => Some(SOILS.iter().find(|class| class.soil() == soil).map_or_else(
+            || RuleOfThumb::by_conductivity(soil.conductivity_w_per_m_k),
+            |class| class.rule_of_thumb,
+        )),
         Layout::Trenches { .. } => None,
     };
     let nearest = |rule: &RuleOfThumb| {
-        let [low, high] = if full_load_hours < 2100.0 { rule.at_1800_h } else { rule.at_2400_h };
+        let [low, high] = if full_load_hours < 2100.0 {
+            rule.at_1800_h
+        } else {
+            rule.at_2400_h
+        };
         // "Less than" has no least value, and so no greatest length.
-        [draw_kw * 1000.0 / high, if low > 0.0 { draw_kw * 1000.0 / low } else { draw_kw * 1000.0 / high }]
+        [
+            draw_kw * 1000.0 / high,
+            if low > 0.0 {
+                draw_kw * 1000.0 / low
+            } else {
+                draw_kw * 1000.0 / high
+            },
+        ]
     };
     let coldest = found.year.coldest;
     let of = |part: fn(&crate::study::BrineHour) -> f64| coldest.as_ref().map_or(f64::NAN, part);
@@ -315,9 +346,14 @@ fn life_findings(machine: &MachineSystem, life: &[LoopYear], label: &str) -> Vec
             "the loop is too short for this home and machine: a longer one, more insulation or a smaller machine is needed",
         ));
     }
-    let Source::Buried(buried) = &machine.source else { return findings };
-    let lowest_leaving_c =
-        life.iter().filter_map(|year| year.coldest).map(|hour| hour.leaving_c).fold(f64::INFINITY, f64::min);
+    let Source::Buried(buried) = &machine.source else {
+        return findings;
+    };
+    let lowest_leaving_c = life
+        .iter()
+        .filter_map(|year| year.coldest)
+        .map(|hour| hour.leaving_c)
+        .fold(f64::INFINITY, f64::min);
     let freezing_c = buried.circuit.brine.freezing_c();
     if lowest_leaving_c < freezing_c {
         findings.push(Finding::new(
@@ -326,7 +362,10 @@ fn life_findings(machine: &MachineSystem, life: &[LoopYear], label: &str) -> Vec
             "ice can burst the exchanger: more antifreeze or a longer loop is needed",
         ));
     }
-    let frozen = life.iter().max_by_key(|year| year.hours_wall_frozen).filter(|year| year.hours_wall_frozen > 0);
+    let frozen = life
+        .iter()
+        .max_by_key(|year| year.hours_wall_frozen)
+        .filter(|year| year.hours_wall_frozen > 0);
     if let Some(year) = frozen {
         let what = match buried.design.layout {
             Layout::Bores { .. } => "grout and ground at the bore's wall",
@@ -334,7 +373,10 @@ fn life_findings(machine: &MachineSystem, life: &[LoopYear], label: &str) -> Vec
         };
         findings.push(Finding::new(
             Severity::Warning,
-            format!("{what} of \"{label}\" is below 0 °C in {} hours of year {}", year.hours_wall_frozen, year.year),
+            format!(
+                "{what} of \"{label}\" is below 0 °C in {} hours of year {}",
+                year.hours_wall_frozen, year.year
+            ),
             "freezing lifts soil and can crack grout; the heat that freezing gives is not counted",
         ));
     }

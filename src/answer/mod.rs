@@ -3,10 +3,14 @@
 mod compose;
 pub mod cycle;
 mod estimate;
+pub mod explain;
 pub mod ground;
+pub mod machine;
+pub mod rating;
 pub mod tariff;
 
 pub use compose::{Told, compose};
 pub use estimate::{
-    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer,
+    WeatherUsed, YearAnswer,
 };

@@ -3,6 +3,7 @@
 //! Every line is a quantity, a rate and an amount, rounded once, half up. Months are shares of the lines, so twelve
 //! months add up to the year to the cent.
 
+mod entries;
 mod lines;
 mod month;
 

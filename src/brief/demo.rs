@@ -12,7 +12,6 @@ macro_rules! embedded {
 embedded![
     "briefs/terrace.toml",
     "briefs/machines/air-r290-small.toml",
-    "briefs/machines/ground-r410a.toml",
     "tariffs/flat_electricity.toml",
     "tariffs/flat_gas.toml",
     "weather_samples/morvane_sound.csv",
@@ -25,5 +24,8 @@ pub(super) const BRIEF: &str = "terrace.toml";
 
 /// The content of an embedded file.
 pub(super) fn file(path: &str) -> Option<&'static [u8]> {
-    FILES.iter().find(|(name, _)| *name == path).map(|(_, content)| *content)
+    FILES
+        .iter()
+        .find(|(name, _)| *name == path)
+        .map(|(_, content)| *content)
 }

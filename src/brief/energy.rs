@@ -52,7 +52,8 @@ pub(super) fn energy(
         "energy.electricity",
         "\"../tariffs/flat_electricity.toml\"",
     );
-    let electricity = electricity.and_then(|path| tariff(&path, &table.electricity, Fuel::Electricity, folder, check));
+    let electricity = electricity
+        .and_then(|path| tariff(&path, &table.electricity, Fuel::Electricity, folder, check));
     let gas_path = check.value(&table.gas);
     let gas = gas_path.and_then(|path| tariff(&path, &table.gas, Fuel::Gas, folder, check));
     if let (Some(electricity), Some(gas), Some(leaf)) = (&electricity, &gas, &table.gas)
@@ -60,7 +61,10 @@ pub(super) fn energy(
     {
         check.refuse(
             &leaf.span(),
-            format!("gas is paid in {}, electricity in {}", gas.currency, electricity.currency),
+            format!(
+                "gas is paid in {}, electricity in {}",
+                gas.currency, electricity.currency
+            ),
             "one currency for all tariffs of a brief",
             "give tariffs of one country, or convert one of them",
         );
@@ -76,7 +80,12 @@ pub(super) fn energy(
         (None, Some(_)) => return None,
         (None, None) => None,
     };
-    Some(Energy { currency, electricity: electricity?, gas, carbon_scope })
+    Some(Energy {
+        currency,
+        electricity: electricity?,
+        gas,
+        carbon_scope,
+    })
 }
 
 fn tariff(
@@ -88,7 +97,9 @@ fn tariff(
 ) -> Option<Tariff> {
     let text = check.take(folder.text(path))?;
     let name = folder.name(path);
-    let beside = std::path::Path::new(&name).parent().unwrap_or_else(|| "".as_ref());
+    let beside = std::path::Path::new(&name)
+        .parent()
+        .unwrap_or_else(|| "".as_ref());
     let tariff = check.take(Tariff::from_text(&name, &text, beside))?;
     if tariff.fuel != fuel {
         let span = leaf.as_ref().map(Leaf::span).unwrap_or_default();
@@ -117,38 +128,72 @@ fn supply(
             price: meter.price_column(&tariff, None),
             carbon_kg: factors.carbon_column(tariff.fuel, &site.civil)?,
         };
-        Ok(Supply { account: Account { tariff: Arc::new(tariff.clone()), meter: Arc::new(meter) }, signal })
+        Ok(Supply {
+            account: Account {
+                tariff: Arc::new(tariff.clone()),
+                meter: Arc::new(meter),
+            },
+            signal,
+        })
     };
     check.take(made())
 }
 
-fn factors(table: &Section<raw::Energies>, check: &mut Check, notes: &mut Notes) -> Option<Factors> {
+fn factors(
+    table: &Section<raw::Energies>,
+    check: &mut Check,
+    notes: &mut Notes,
+) -> Option<Factors> {
     let set = match (&table.carbon, check.value(&table.carbon)) {
         (None, _) => Published::default_set(),
         (Some(leaf), Some(name)) => match Published::of(&name) {
             Some(set) => set,
             None => {
-                let names: Vec<_> = PUBLISHED.iter().map(|set| format!("\"{}\"", set.name)).collect();
-                check.refuse(&leaf.span(), format!("\"{name}\""), names.join(", "), "name one of the published sets");
+                let names: Vec<_> = PUBLISHED
+                    .iter()
+                    .map(|set| format!("\"{}\"", set.name))
+                    .collect();
+                check.refuse(
+                    &leaf.span(),
+                    format!("\"{name}\""),
+                    names.join(", "),
+                    "name one of the published sets",
+                );
                 return None;
             }
         },
         (Some(_), None) => return None,
     };
     let own_scope = scope(table, check);
-    let electricity = own(&table.electricity_carbon, Fuel::Electricity, own_scope, table, check);
+    let electricity = own(
+        &table.electricity_carbon,
+        Fuel::Electricity,
+        own_scope,
+        table,
+        check,
+    );
     let gas = own(&table.gas_carbon, Fuel::Gas, own_scope, table, check);
     let published: Vec<Factor> = set.factors().iter().cloned().collect();
     let factors: Vec<Factor> = [Fuel::Electricity, Fuel::Gas]
         .into_iter()
         .zip([electricity, gas])
-        .filter_map(|(fuel, own)| own.or_else(|| published.iter().find(|factor| factor.fuel == fuel).cloned()))
+        .filter_map(|(fuel, own)| {
+            own.or_else(|| published.iter().find(|factor| factor.fuel == fuel).cloned())
+        })
         .collect();
     for factor in &factors {
         if let Course::Constant(kg) = factor.course {
-            notes.add(format!("carbon of {}", factor.fuel), format!("{kg:.5} kg CO2e/kWh"), factor.source.clone());
+            notes.add(
+                format!("carbon of {}", factor.fuel),
+                format!("{kg:.5} kg CO2e/kWh"),
+                factor.source.clone(),
+            );
         } else {
-            notes.add(format!("carbon of {}", factor.fuel), "by month or hour", factor.source.clone());
+            notes.add(
+                format!("carbon of {}", factor.fuel),
+                "by month or hour",
+                factor.source.clone(),
+            );
         }
     }
     check.take(Factors::new(factors))
@@ -159,8 +204,16 @@ fn scope(table: &Section<raw::Energies>, check: &mut Check) -> Option<Scope> {
     let name = check.value(&table.carbon_scope)?;
     let scope = Scope::from_name(&name);
     if scope.is_none() {
-        let names: Vec<_> = Scope::ALL.iter().map(|scope| format!("\"{}\" ({})", scope.name(), scope.words())).collect();
-        check.refuse(&leaf.span(), format!("\"{name}\""), names.join(", "), "say what the carbon factors count");
+        let names: Vec<_> = Scope::ALL
+            .iter()
+            .map(|scope| format!("\"{}\" ({})", scope.name(), scope.words()))
+            .collect();
+        check.refuse(
+            &leaf.span(),
+            format!("\"{name}\""),
+            names.join(", "),
+            "say what the carbon factors count",
+        );
     }
     scope
 }
@@ -173,9 +226,16 @@ fn own(
     check: &mut Check,
 ) -> Option<Factor> {
     let factor = check.within(leaf, &bounds::CARBON_KG_PER_KWH)?;
-    let place: Place = leaf.as_ref().map(|leaf| check.place(&leaf.span())).unwrap_or_default();
+    let place: Place = leaf
+        .as_ref()
+        .map(|leaf| check.place(&leaf.span()))
+        .unwrap_or_default();
     if scope.is_none() && table.carbon_scope.is_none() {
-        check.missing(&table.span(), "energy.carbon_scope", "\"burning-at-the-meter\", which says what the factor counts");
+        check.missing(
+            &table.span(),
+            "energy.carbon_scope",
+            "\"burning-at-the-meter\", which says what the factor counts",
+        );
     }
     Some(Factor {
         fuel,

@@ -50,7 +50,10 @@ impl Folder {
                     return Err(refuse("is not a file".to_owned(), remedy));
                 }
                 if facts.len() > LARGEST {
-                    return Err(refuse(format!("is {} bytes long", facts.len()), "at most 512 MiB are read"));
+                    return Err(refuse(
+                        format!("is {} bytes long", facts.len()),
+                        "at most 512 MiB are read",
+                    ));
                 }
                 fs::read(&path)
                     .map(Cow::Owned)
@@ -98,13 +101,21 @@ mod tests {
 
     #[test]
     fn a_missing_file_is_named_with_the_folder_of_the_brief() {
-        let problems = Folder::Disk("no/such".into()).text("tariff.toml").unwrap_err();
-        assert!(problems.to_string().contains("no/such/tariff.toml"), "{problems}");
+        let problems = Folder::Disk("no/such".into())
+            .text("tariff.toml")
+            .unwrap_err();
+        assert!(
+            problems.to_string().contains("no/such/tariff.toml"),
+            "{problems}"
+        );
     }
 
     #[test]
     fn embedded_paths_are_made_plain() {
-        assert_eq!(Folder::Embedded("briefs").name("../tariffs/a.toml"), "tariffs/a.toml");
+        assert_eq!(
+            Folder::Embedded("briefs").name("../tariffs/a.toml"),
+            "tariffs/a.toml"
+        );
         assert!(Folder::Embedded("briefs").text("../nothing.toml").is_err());
     }
 }

@@ -4,7 +4,9 @@ use std::ops::Range;
 
 use super::defaults;
 use super::notes::Notes;
-use super::raw::{EmitterTable, Home as HomeTable, HotWaterTable, StoreVolume, SystemKind, SystemTable};
+use super::raw::{
+    EmitterTable, Home as HomeTable, HotWaterTable, StoreVolume, SystemKind, SystemTable,
+};
 use crate::bounds;
 use crate::document::{Check, Section};
 use crate::home::{DRAW_SHARES, Emitters, Fabric, Home, HotWater, Store};
@@ -58,7 +60,13 @@ pub(super) fn warm_side(
     let heat_loss = check.within(&system.heat_loss, &bounds::HEAT_LOSS_W_PER_K);
     let indoor = check.within(&system.indoor, &bounds::INDOOR_C);
     let fabric_parts = fabric_parts(home, weather, check, notes);
-    let hot_water = hot_water(home.hot_water.as_ref(), system.hot_water.as_ref(), kind, check, notes);
+    let hot_water = hot_water(
+        home.hot_water.as_ref(),
+        system.hot_water.as_ref(),
+        kind,
+        check,
+        notes,
+    );
 
     let as_is = as_is?;
     let own = Envelope {
@@ -71,7 +79,11 @@ pub(super) fn warm_side(
         (Some(new), old) => emitters(new, old.as_ref(), &own, check, notes),
         (None, Some(old)) => emitters(old, None, &as_is, check, notes),
         (None, None) => {
-            check.missing(&home.span(), "home.emitters", "a table [home.emitters] with flow = \"50 °C\"");
+            check.missing(
+                &home.span(),
+                "home.emitters",
+                "a table [home.emitters] with flow = \"50 °C\"",
+            );
             None
         }
     };
@@ -92,7 +104,12 @@ pub(super) fn warm_side(
     };
     Some(Warm {
         home: Home {
-            fabric: Fabric::new(own.heat_loss_w_per_k, capacity_kwh_per_k, gains_kw, aperture_m2),
+            fabric: Fabric::new(
+                own.heat_loss_w_per_k,
+                capacity_kwh_per_k,
+                gains_kw,
+                aperture_m2,
+            ),
             emitters: emitters?,
             hot_water: hot_water?,
         },
@@ -122,7 +139,10 @@ fn envelope(
     let indoor_c = indoor?.c();
     let design_outdoor_c = design_outdoor.map_or(weather.design_c, |outdoor| outdoor.c());
     if design_outdoor_c >= indoor_c - 1.0 {
-        let span = home.design_outdoor.as_ref().map_or_else(|| home.span(), |leaf| leaf.span());
+        let span = home
+            .design_outdoor
+            .as_ref()
+            .map_or_else(|| home.span(), |leaf| leaf.span());
         check.refuse(
             &span,
             format!("design outdoor temperature {design_outdoor_c:.1} °C"),
@@ -134,7 +154,11 @@ fn envelope(
     let difference_k = indoor_c - design_outdoor_c;
     match (&home.heat_loss, &home.design_heat_load) {
         (None, None) => {
-            check.missing(&home.span(), "home.heat_loss", "\"212 W/K\", or design_heat_load = \"6 kW\"");
+            check.missing(
+                &home.span(),
+                "home.heat_loss",
+                "\"212 W/K\", or design_heat_load = \"6 kW\"",
+            );
             None
         }
         (Some(leaf), Some(_)) => {
@@ -151,11 +175,17 @@ fn envelope(
                 );
                 return None;
             }
-            Some(Envelope { heat_loss_w_per_k: loss, indoor_c, design_outdoor_c })
+            Some(Envelope {
+                heat_loss_w_per_k: loss,
+                indoor_c,
+                design_outdoor_c,
+            })
         }
-        (Some(_), None) => {
-            Some(Envelope { heat_loss_w_per_k: heat_loss?.w_per_k(), indoor_c, design_outdoor_c })
-        }
+        (Some(_), None) => Some(Envelope {
+            heat_loss_w_per_k: heat_loss?.w_per_k(),
+            indoor_c,
+            design_outdoor_c,
+        }),
         (None, Some(leaf)) => {
             if home.design_outdoor.is_none() {
                 check.missing(
@@ -180,7 +210,11 @@ fn envelope(
                 format!("{heat_loss_w_per_k:.0} W/K"),
                 "design_heat_load over the difference of indoor and design_outdoor",
             );
-            Some(Envelope { heat_loss_w_per_k, indoor_c, design_outdoor_c })
+            Some(Envelope {
+                heat_loss_w_per_k,
+                indoor_c,
+                design_outdoor_c,
+            })
         }
     }
 }
@@ -206,7 +240,9 @@ fn fabric_parts(
     check: &mut Check,
     notes: &mut Notes,
 ) -> Option<FabricParts> {
-    let area_m2 = check.within(&home.floor_area, &bounds::FLOOR_AREA_M2).map(|area| area.m2());
+    let area_m2 = check
+        .within(&home.floor_area, &bounds::FLOOR_AREA_M2)
+        .map(|area| area.m2());
     Some(FabricParts {
         storage: storage(home, area_m2, check, notes)?,
         gains: gains(home, area_m2, weather, check, notes)?,
@@ -234,11 +270,17 @@ fn storage(
     }
     match (&home.construction, area_m2) {
         (Some(leaf), None) if home.floor_area.is_none() => {
-            check.missing(&leaf.span(), "home.floor_area", "\"96 m²\", which construction needs");
+            check.missing(
+                &leaf.span(),
+                "home.floor_area",
+                "\"96 m²\", which construction needs",
+            );
             None
         }
         (_, Some(area_m2)) => {
-            let construction = notes.word(check, &home.construction, &defaults::CONSTRUCTION)?.0;
+            let construction = notes
+                .word(check, &home.construction, &defaults::CONSTRUCTION)?
+                .0;
             Some(Storage::Capacity(construction.capacity_kwh_per_k(area_m2)))
         }
         _ => {
@@ -289,20 +331,46 @@ fn gains(
             let internal_kw = match internal {
                 Some(power) => power.kw(),
                 None => {
-                    let watts = 1000.0 * parse::<crate::units::Power>(defaults::INTERNAL_GAINS_PER_M2.value).ok()?.kw() * area_m2;
-                    notes.add("home.internal_gains", format!("{watts:.0} W"), format!("default: {} {}", defaults::INTERNAL_GAINS_PER_M2.value, defaults::INTERNAL_GAINS_PER_M2.from));
+                    let watts = 1000.0
+                        * parse::<crate::units::Power>(defaults::INTERNAL_GAINS_PER_M2.value)
+                            .ok()?
+                            .kw()
+                        * area_m2;
+                    notes.add(
+                        "home.internal_gains",
+                        format!("{watts:.0} W"),
+                        format!(
+                            "default: {} {}",
+                            defaults::INTERNAL_GAINS_PER_M2.value,
+                            defaults::INTERNAL_GAINS_PER_M2.from
+                        ),
+                    );
                     watts / 1000.0
                 }
             };
             let aperture_m2 = match aperture {
                 Some(area) => area.m2(),
                 None => {
-                    let m2 = parse::<Share>(defaults::SOLAR_APERTURE_PER_M2.value).ok()?.fraction() * area_m2;
-                    notes.add("home.solar_aperture", format!("{m2:.1} m²"), format!("default: {} {}", defaults::SOLAR_APERTURE_PER_M2.value, defaults::SOLAR_APERTURE_PER_M2.from));
+                    let m2 = parse::<Share>(defaults::SOLAR_APERTURE_PER_M2.value)
+                        .ok()?
+                        .fraction()
+                        * area_m2;
+                    notes.add(
+                        "home.solar_aperture",
+                        format!("{m2:.1} m²"),
+                        format!(
+                            "default: {} {}",
+                            defaults::SOLAR_APERTURE_PER_M2.value,
+                            defaults::SOLAR_APERTURE_PER_M2.from
+                        ),
+                    );
                     m2
                 }
             };
-            Some(Gains::Constant { internal_kw, aperture_m2 })
+            Some(Gains::Constant {
+                internal_kw,
+                aperture_m2,
+            })
         }
         _ if internal.is_some() || aperture.is_some() => Some(Gains::Constant {
             internal_kw: internal.map_or(0.0, |power| power.kw()),
@@ -310,13 +378,23 @@ fn gains(
         }),
         _ => {
             notes.used(&defaults::BASE_TEMPERATURE);
-            up_to(parse::<crate::units::Temperature>(defaults::BASE_TEMPERATURE.value).ok()?.c(), home, check)
+            up_to(
+                parse::<crate::units::Temperature>(defaults::BASE_TEMPERATURE.value)
+                    .ok()?
+                    .c(),
+                home,
+                check,
+            )
         }
     }
 }
 
 fn up_to(base_c: f64, home: &Section<HomeTable>, check: &mut Check) -> Option<Gains> {
-    let indoor_c = home.indoor.as_ref().and_then(|leaf| leaf.value().ok()).map(|indoor| indoor.c());
+    let indoor_c = home
+        .indoor
+        .as_ref()
+        .and_then(|leaf| leaf.value().ok())
+        .map(|indoor| indoor.c());
     if let (Some(indoor_c), Some(leaf)) = (indoor_c, &home.base_temperature)
         && base_c > indoor_c
     {
@@ -351,7 +429,11 @@ fn emitters(
     check: &mut Check,
     notes: &mut Notes,
 ) -> Option<Emitters> {
-    let kind_leaf = if table.kind.is_some() { &table.kind } else { home.map_or(&table.kind, |home| &home.kind) };
+    let kind_leaf = if table.kind.is_some() {
+        &table.kind
+    } else {
+        home.map_or(&table.kind, |home| &home.kind)
+    };
     let kind = notes.word(check, kind_leaf, &defaults::EMITTER_KIND);
     let flow = check.required(&table.flow, &table.span(), "flow", "\"50 °C\"");
     let flow = flow.and_then(|_| check.within(&table.flow, &bounds::FLOW_C));
@@ -372,11 +454,18 @@ fn emitters(
         }
     };
     if return_c >= flow_c || return_c <= envelope.indoor_c {
-        let span = table.return_.as_ref().or(table.flow.as_ref()).map_or_else(|| table.span(), |leaf| leaf.span());
+        let span = table
+            .return_
+            .as_ref()
+            .or(table.flow.as_ref())
+            .map_or_else(|| table.span(), |leaf| leaf.span());
         check.refuse(
             &span,
             format!("return {return_c:.1} °C at a flow of {flow_c:.1} °C"),
-            format!("below the flow and above the set point of {:.1} °C", envelope.indoor_c),
+            format!(
+                "below the flow and above the set point of {:.1} °C",
+                envelope.indoor_c
+            ),
             "give the water temperatures at the design heat load",
         );
         return None;
@@ -387,7 +476,10 @@ fn emitters(
             if greatest.c() < flow_c {
                 check.refuse(
                     &leaf.span(),
-                    format!("greatest flow {:.1} °C below the design flow {flow_c:.1} °C", greatest.c()),
+                    format!(
+                        "greatest flow {:.1} °C below the design flow {flow_c:.1} °C",
+                        greatest.c()
+                    ),
                     "at least the design flow",
                     "raise it or lower flow",
                 );
@@ -397,11 +489,23 @@ fn emitters(
         }
         (None, _) => {
             notes.used(&defaults::GREATEST_FLOW_ABOVE_DESIGN);
-            flow_c + parse::<crate::units::TemperatureDifference>(defaults::GREATEST_FLOW_ABOVE_DESIGN.value).ok()?.k()
+            flow_c
+                + parse::<crate::units::TemperatureDifference>(
+                    defaults::GREATEST_FLOW_ABOVE_DESIGN.value,
+                )
+                .ok()?
+                .k()
         }
     };
     let load_kw = envelope.design_load_kw();
-    Some(Emitters::new(kind?.0, load_kw, flow_c, return_c, envelope.indoor_c, greatest_flow_c))
+    Some(Emitters::new(
+        kind?.0,
+        load_kw,
+        flow_c,
+        return_c,
+        envelope.indoor_c,
+        greatest_flow_c,
+    ))
 }
 
 /// A field of a choice's table where it is given, else of the home's.
@@ -415,7 +519,10 @@ macro_rules! either {
     };
 }
 
-#[allow(clippy::option_option, reason = "outer: could not be read; inner: no hot water is asked for")]
+#[allow(
+    clippy::option_option,
+    reason = "outer: could not be read; inner: no hot water is asked for"
+)]
 fn hot_water(
     home: Option<&Section<HotWaterTable>>,
     own: Option<&Section<HotWaterTable>>,
@@ -424,32 +531,58 @@ fn hot_water(
     notes: &mut Notes,
 ) -> Option<Option<HotWater>> {
     if home.is_none() && own.is_none() {
-        notes.add("home.hot_water", "none", "the brief has no [home.hot_water]: its heat is left out of every system");
+        notes.add(
+            "home.hot_water",
+            "none",
+            "the brief has no [home.hot_water]: its heat is left out of every system",
+        );
         return Some(None);
     }
     let daily_leaf = either!(own, home, daily);
     let energy_leaf = either!(own, home, daily_energy);
     if let (Some(leaf), Some(_)) = (daily_leaf, energy_leaf) {
-        check.refuse(&leaf.span(), "both daily and daily_energy", "one of them", "keep the one that was measured");
+        check.refuse(
+            &leaf.span(),
+            "both daily and daily_energy",
+            "one of them",
+            "keep the one that was measured",
+        );
         return None;
     }
     let daily = check.within(daily_leaf, &bounds::HOT_WATER_L);
     let draw_leaf = either!(own, home, drawn_at);
     let drawn_at = notes.quantity(check, draw_leaf, &bounds::HOT_WATER_C, &defaults::DRAWN_AT);
-    let cold = notes.quantity(check, either!(own, home, cold), &bounds::COLD_WATER_C, &defaults::COLD_WATER);
+    let cold = notes.quantity(
+        check,
+        either!(own, home, cold),
+        &bounds::COLD_WATER_C,
+        &defaults::COLD_WATER,
+    );
     let set_point_leaf = either!(own, home, setpoint);
     let hysteresis_leaf = either!(own, home, hysteresis);
     let store_leaf = either!(own, home, store);
     let (drawn_at_c, cold_c) = (drawn_at?.c(), cold?.c());
     if drawn_at_c <= cold_c {
         let span = span_of(draw_leaf).unwrap_or_default();
-        check.refuse(&span, format!("drawn at {drawn_at_c:.1} °C from cold water at {cold_c:.1} °C"), "warmer than the cold water", "check both temperatures");
+        check.refuse(
+            &span,
+            format!("drawn at {drawn_at_c:.1} °C from cold water at {cold_c:.1} °C"),
+            "warmer than the cold water",
+            "check both temperatures",
+        );
         return None;
     }
     let daily_kwh = if daily_leaf.is_some() {
         HotWater::energy_kwh(daily?.l(), drawn_at_c, cold_c)
     } else {
-        notes.quantity(check, energy_leaf, &bounds::HOT_WATER_KWH, &defaults::HOT_WATER_DAILY)?.kwh()
+        notes
+            .quantity(
+                check,
+                energy_leaf,
+                &bounds::HOT_WATER_KWH,
+                &defaults::HOT_WATER_DAILY,
+            )?
+            .kwh()
     };
     let volume = notes.word(check, store_leaf, &defaults::STORE)?;
     let is_machine = matches!(kind, Some(SystemKind::AirSource | SystemKind::GroundSource));
@@ -468,25 +601,51 @@ fn hot_water(
         StoreVolume::Of(volume) => {
             if !bounds::STORE_L.holds(volume.l()) {
                 let span = span_of(store_leaf).unwrap_or_default();
-                check.refuse(&span, format!("{} L", volume.l()), bounds::STORE_L.words(), "check the number and its unit");
+                check.refuse(
+                    &span,
+                    format!("{} L", volume.l()),
+                    bounds::STORE_L.words(),
+                    "check the number and its unit",
+                );
                 return None;
             }
-            let set_point = notes.quantity(check, set_point_leaf, &bounds::HOT_WATER_C, &defaults::SET_POINT)?;
-            let hysteresis = notes.quantity(check, hysteresis_leaf, &bounds::HYSTERESIS_K, &defaults::HYSTERESIS)?;
+            let set_point = notes.quantity(
+                check,
+                set_point_leaf,
+                &bounds::HOT_WATER_C,
+                &defaults::SET_POINT,
+            )?;
+            let hysteresis = notes.quantity(
+                check,
+                hysteresis_leaf,
+                &bounds::HYSTERESIS_K,
+                &defaults::HYSTERESIS,
+            )?;
             if set_point.c() < drawn_at_c {
                 let span = span_of(set_point_leaf).unwrap_or_default();
                 check.refuse(
                     &span,
-                    format!("a store at {:.1} °C for water drawn at {drawn_at_c:.1} °C", set_point.c()),
+                    format!(
+                        "a store at {:.1} °C for water drawn at {drawn_at_c:.1} °C",
+                        set_point.c()
+                    ),
                     "a store at least as warm as the water drawn",
                     "raise setpoint or lower drawn_at",
                 );
                 return None;
             }
-            Some(Store { hysteresis_k: hysteresis.k(), ..Store::of_volume(volume.l(), set_point.c()) })
+            Some(Store {
+                hysteresis_k: hysteresis.k(),
+                ..Store::of_volume(volume.l(), set_point.c())
+            })
         }
     };
-    Some(Some(HotWater { daily_kwh, shares: DRAW_SHARES, store, draw_c: drawn_at_c }))
+    Some(Some(HotWater {
+        daily_kwh,
+        shares: DRAW_SHARES,
+        store,
+        draw_c: drawn_at_c,
+    }))
 }
 
 fn span_of<T>(leaf: &Option<crate::document::Leaf<T>>) -> Option<Range<usize>> {

@@ -11,6 +11,7 @@ use crate::bounds;
 use crate::document::{Check, Leaf, Section};
 use crate::heatpump::{HeatPump, Sheet, SourceKind, fit};
 use crate::problem::{Finding, Problem, Problems, Severity};
+use crate::refrigerant::Refrigerant;
 use crate::units::{Power, Temperature, parse};
 
 /// A fitted machine and what there is to tell about it.
@@ -38,7 +39,11 @@ pub(super) fn machine(
         &bounds::FIELD_FACTOR,
         &defaults::MACHINE_FIELD_FACTOR,
     );
-    let ways = [table.machine.is_some(), table.typical_machine.is_some(), table.rated_cop.is_some()];
+    let ways = [
+        table.machine.is_some(),
+        table.typical_machine.is_some(),
+        table.rated_cop.is_some(),
+    ];
     if ways.iter().filter(|&&given| given).count() != 1 {
         check.refuse(
             &table.span(),
@@ -47,6 +52,14 @@ pub(super) fn machine(
             "name a machine sheet, or a typical machine with rated_output, or give rated_output, rated_cop and refrigerant",
         );
         return None;
+    }
+    if let (Some(_), Some(leaf)) = (&table.machine, &table.rated_output) {
+        check.refuse(
+            &leaf.span(),
+            "rated_output beside machine",
+            "the size that the machine sheet tells",
+            "remove it; only a typical machine can be scaled",
+        );
     }
     let sheet = if table.machine.is_some() {
         let path = check.value(&table.machine)?;
@@ -61,7 +74,7 @@ pub(super) fn machine(
     source_agrees(table, kind, &sheet, check)?;
     let fitted = check.take(fit(&sheet))?;
     let scaled = match rated_output {
-        Some(output) if table.rated_cop.is_none() => fitted.heat_pump.scaled_to(output.kw()),
+        Some(output) if table.typical_machine.is_some() => fitted.heat_pump.scaled_to(output.kw()),
         _ => fitted.heat_pump.clone(),
     };
     let machine = scaled.with_field_factor(factor?.fraction());
@@ -71,14 +84,26 @@ pub(super) fn machine(
         findings.extend(smaller_than_design(&machine, &label, warm));
     }
     for assumed in &sheet.assumed {
-        notes.add(format!("{}: {}", sheet.label, assumed.name), assumed.value.clone(), assumed.from);
+        notes.add(
+            format!("{}: {}", sheet.label, assumed.name),
+            assumed.value.clone(),
+            assumed.from,
+        );
     }
-    Some(MachineMade { machine, label, findings })
+    Some(MachineMade {
+        machine,
+        label,
+        findings,
+    })
 }
 
 fn label(machine: &HeatPump, table: &SystemTable) -> String {
     let output = format!("{:.1} kW", machine.rated_output_kw());
-    let letter = if machine.source() == SourceKind::Air { 'A' } else { 'B' };
+    let letter = if machine.source() == SourceKind::Air {
+        'A'
+    } else {
+        'B'
+    };
     let (source_c, flow_c) = machine.rated_condition();
     let size = format!("{output} at {letter}{source_c:.0}/W{flow_c:.0}");
     if table.typical_machine.is_some() {
@@ -88,9 +113,17 @@ fn label(machine: &HeatPump, table: &SystemTable) -> String {
     }
 }
 
-fn typical_sheet(table: &Section<SystemTable>, rated_output: Option<Power>, check: &mut Check) -> Option<Sheet> {
+fn typical_sheet(
+    table: &Section<SystemTable>,
+    rated_output: Option<Power>,
+    check: &mut Check,
+) -> Option<Sheet> {
     if table.rated_output.is_none() {
-        check.missing(&table.span(), "rated_output", "\"6 kW\", to which the typical machine is scaled");
+        check.missing(
+            &table.span(),
+            "rated_output",
+            "\"6 kW\", to which the typical machine is scaled",
+        );
     }
     let name = check.value(&table.typical_machine)?;
     let sheet = Sheet::typical(&name)
@@ -113,6 +146,18 @@ fn one_point(
         check.missing(&span, "rated_output", "\"6 kW\"");
     }
     let refrigerant = check.required(&table.refrigerant, &span, "refrigerant", "\"R290\"");
+    let refrigerant = refrigerant.filter(|name| {
+        let held = name.parse::<Refrigerant>();
+        if let Err(unknown) = &held {
+            check.refuse(
+                &span_of(&table.refrigerant),
+                unknown.to_string(),
+                Refrigerant::names(),
+                "",
+            );
+        }
+        held.is_ok()
+    });
     let cop = check.plain_within(&table.rated_cop, &bounds::COP);
     let default = match kind {
         SystemKind::GroundSource => defaults::RATED_AT_GROUND,
@@ -143,7 +188,8 @@ fn one_point(
         output.kw(),
         refrigerant = toml::Value::String(refrigerant),
     );
-    let sheet = Sheet::parse("rated point", &text).map_err(|problems| at_the_table(&problems, &span, check));
+    let sheet = Sheet::parse("rated point", &text)
+        .map_err(|problems| at_the_table(&problems, &span, check));
     check.take(sheet)
 }
 
@@ -151,7 +197,10 @@ fn one_point(
 fn at_the_table(problems: &Problems, span: &Range<usize>, check: &Check) -> Problems {
     let mut told = Problems::new();
     for problem in problems.iter() {
-        told.push(Problem { place: check.place(span), ..problem.clone() });
+        told.push(Problem {
+            place: check.place(span),
+            ..problem.clone()
+        });
     }
     told
 }
@@ -159,23 +208,38 @@ fn at_the_table(problems: &Problems, span: &Range<usize>, check: &Check) -> Prob
 /// Reads `"7 °C / 35 °C"`.
 fn rating_point(text: &str) -> Option<(f64, f64)> {
     let (source, flow) = text.split_once('/')?;
-    Some((parse::<Temperature>(source).ok()?.c(), parse::<Temperature>(flow).ok()?.c()))
+    Some((
+        parse::<Temperature>(source).ok()?.c(),
+        parse::<Temperature>(flow).ok()?.c(),
+    ))
 }
 
-fn source_agrees(table: &Section<SystemTable>, kind: SystemKind, sheet: &Sheet, check: &mut Check) -> Option<()> {
+fn source_agrees(
+    table: &Section<SystemTable>,
+    kind: SystemKind,
+    sheet: &Sheet,
+    check: &mut Check,
+) -> Option<()> {
     let agrees = match kind {
         SystemKind::GroundSource => sheet.source != SourceKind::Air,
         _ => sheet.source == SourceKind::Air,
     };
     if !agrees {
-        let leaf = if table.machine.is_some() { &table.machine } else { &table.typical_machine };
+        let leaf = if table.machine.is_some() {
+            &table.machine
+        } else {
+            &table.typical_machine
+        };
         let (has, needs) = match kind {
             SystemKind::GroundSource => ("air", "brine or water"),
             _ => ("brine or water", "air"),
         };
         check.refuse(
             &span_of(leaf),
-            format!("a machine that draws on {has} in a table of kind \"{}\"", kind.word()),
+            format!(
+                "a machine that draws on {has} in a table of kind \"{}\"",
+                kind.word()
+            ),
             format!("a machine that draws on {needs}"),
             "name another machine or change kind",
         );

@@ -12,8 +12,17 @@ pub(super) struct Notes(Vec<Assumption>);
 
 impl Notes {
     /// Notes a value and where it is from.
-    pub fn add(&mut self, name: impl Into<String>, value: impl Into<String>, from: impl Into<String>) {
-        let note = Assumption { name: name.into(), value: value.into(), from: from.into() };
+    pub fn add(
+        &mut self,
+        name: impl Into<String>,
+        value: impl Into<String>,
+        from: impl Into<String>,
+    ) {
+        let note = Assumption {
+            name: name.into(),
+            value: value.into(),
+            from: from.into(),
+        };
         if !self.0.contains(&note) {
             self.0.push(note);
         }
@@ -21,7 +30,11 @@ impl Notes {
 
     /// Notes that a default was used.
     pub fn used(&mut self, default: &Default) {
-        self.add(default.field, default.value, format!("default: {}", default.from));
+        self.add(
+            default.field,
+            default.value,
+            format!("default: {}", default.from),
+        );
     }
 
     /// All of them.

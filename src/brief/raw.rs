@@ -3,7 +3,9 @@
 use schemars::JsonSchema;
 use serde::Deserialize;
 
-use super::ground::{BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable};
+use super::ground::{
+    BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
+};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind};
@@ -107,10 +109,12 @@ impl crate::document::LeafValue for StoreVolume {
     fn read(value: &toml::Value) -> Result<Self, crate::units::UnitProblem> {
         match value.as_str() {
             Some("none") => Ok(Self::None),
-            _ => WaterVolume::read(value).map(Self::Of).map_err(|mut problem| {
-                problem.allowed.push_str(", or \"none\"");
-                problem
-            }),
+            _ => WaterVolume::read(value)
+                .map(Self::Of)
+                .map_err(|mut problem| {
+                    problem.allowed.push_str(", or \"none\"");
+                    problem
+                }),
         }
     }
 
@@ -257,7 +261,10 @@ pub(super) enum SystemKind {
 impl SystemKind {
     /// Its word in brief and results.
     pub fn word(self) -> &'static str {
-        Self::WORDS.iter().find(|(_, kind)| *kind == self).map_or("", |(word, _)| word)
+        Self::WORDS
+            .iter()
+            .find(|(_, kind)| *kind == self)
+            .map_or("", |(word, _)| word)
     }
 }
 

@@ -68,31 +68,41 @@ impl Brief {
 /// Builds what can be built and checks everything else all the same, so that no problem waits for another to be mended.
 fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> {
     let mut notes = Notes::default();
-    let start = 0..0;
     if raw.home.is_none() {
-        check.missing(&start, "home", "a table [home] with heat_loss and emitters");
+        check.missing_table("[home]", "heat_loss, and a table [home.emitters] with flow");
     }
     if raw.today.is_none() {
-        check.missing(&start, "today", "a table [today] with kind = \"gas-boiler\"");
+        check.missing_table("[today]", "label and kind = \"gas-boiler\"");
     }
     if raw.choice.is_empty() {
-        check.missing(&start, "choice", "at least one table [[choice]] with kind = \"air-source\"");
+        check.missing_table("[[choice]]", "label, kind = \"air-source\" and machine");
     }
     if raw.energy.is_none() {
-        check.missing(&start, "energy", "a table [energy] with electricity and gas tariffs");
+        check.missing_table("[energy]", "electricity and gas, the files of the tariffs");
     }
     let label = raw.home.as_ref().and_then(|home| check.value(&home.label));
     let zone = time_zone(raw.home.as_ref(), check, &mut notes);
     let weather = weather(raw.weather.as_ref(), folder, check);
-    let site = weather.as_ref().zip(zone).map(|(weather, zone)| Arc::new(site(weather, zone)));
+    let site = weather
+        .as_ref()
+        .zip(zone)
+        .map(|(weather, zone)| Arc::new(site(weather, zone)));
     let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
     labels_differ(raw, check);
 
     // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
-    let facts = weather.as_ref().map_or(WeatherFacts { design_c: -5.0, has_radiation: true }, facts);
+    let facts = weather.as_ref().map_or(
+        WeatherFacts {
+            design_c: -5.0,
+            has_radiation: true,
+        },
+        facts,
+    );
     let mut contenders = Vec::new();
     let mut machines = Vec::new();
-    let mut findings = weather.as_ref().map_or_else(Vec::new, |weather| weather.findings.clone());
+    let mut findings = weather
+        .as_ref()
+        .map_or_else(Vec::new, |weather| weather.findings.clone());
     if let Some(home) = &raw.home {
         let systems = raw.today.iter().map(|today| (today, true));
         for (table, today) in systems.chain(raw.choice.iter().map(|choice| (choice, false))) {
@@ -111,9 +121,18 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             }
         }
     }
-    let Energy { currency, carbon_scope, .. } = energy?;
+    let Energy {
+        currency,
+        carbon_scope,
+        ..
+    } = energy?;
     let (weather, site, zone) = (weather?, site?, zone?);
-    let mut case = Case { site, time_zone: zone, currency, contenders };
+    let mut case = Case {
+        site,
+        time_zone: zone,
+        currency,
+        contenders,
+    };
     case.age_grounds();
     Some(Brief {
         case,
@@ -154,7 +173,11 @@ fn site(weather: &Weather, zone: Tz) -> Site {
     let civil = weather.axis.civil(zone);
     Site {
         axis: weather.axis,
-        month0: civil.iter().map(CivilHour::month0).map(|month0| u8::try_from(month0).unwrap_or(0)).collect(),
+        month0: civil
+            .iter()
+            .map(CivilHour::month0)
+            .map(|month0| u8::try_from(month0).unwrap_or(0))
+            .collect(),
         civil,
         years: weather.years(),
         outdoor_c: weather.outdoor_c.clone(),

@@ -46,8 +46,18 @@ pub(super) fn contender(
     notes: &mut Notes,
 ) -> Option<Made> {
     let header = if around.today { "today" } else { "choice" };
-    let label = check.required(&table.label, &table.span(), &format!("{header}.label"), "\"Air source\"");
-    let kind = check.required(&table.kind, &table.span(), &format!("{header}.kind"), "\"air-source\"");
+    let label = check.required(
+        &table.label,
+        &table.span(),
+        &format!("{header}.label"),
+        "\"Air source\"",
+    );
+    let kind = check.required(
+        &table.kind,
+        &table.span(),
+        &format!("{header}.kind"),
+        "\"air-source\"",
+    );
     let kind = kind.map(|(kind,)| kind);
     let warm = warm_side(around.home, table, kind, around.facts, check, notes);
     let keeps_gas = check.value(&table.keeps_gas);
@@ -64,26 +74,47 @@ pub(super) fn contender(
     };
     let burns_gas = kind == SystemKind::GasBoiler;
     if burns_gas && around.energy.is_some_and(|energy| energy.gas.is_none()) {
-        check.missing(&table.span(), "energy.gas", "\"../tariffs/flat_gas.toml\", which a gas boiler needs");
+        check.missing(
+            &table.span(),
+            "energy.gas",
+            "\"../tariffs/flat_gas.toml\", which a gas boiler needs",
+        );
     }
     let (heating, made) = heating?;
     let (warm, label, energy, site) = (warm?, label?, around.energy?, around.site?);
-    let gas = if burns_gas || keeps_gas.unwrap_or(false) { energy.gas.as_ref() } else { None };
+    let gas = if burns_gas || keeps_gas.unwrap_or(false) {
+        energy.gas.as_ref()
+    } else {
+        None
+    };
     if burns_gas && gas.is_none() {
         return None;
     }
-    let band_k = parse::<TemperatureDifference>(defaults::BACKUP_BAND.value).ok()?.k();
+    let band_k = parse::<TemperatureDifference>(defaults::BACKUP_BAND.value)
+        .ok()?
+        .k();
     if matches!(heating, Heating::HeatPump(_)) {
         notes.used(&defaults::BACKUP_BAND);
     }
     let fuel_signal = gas.filter(|_| burns_gas).map(|gas| gas.signal.clone());
-    let plan = steady(site.outdoor_c.len(), warm.indoor_c, band_k, energy.electricity.signal.clone(), fuel_signal);
-    let (machine, findings) = made.map_or((None, Vec::new()), |made| (Some(made.label), made.findings));
+    let plan = steady(
+        site.outdoor_c.len(),
+        warm.indoor_c,
+        band_k,
+        energy.electricity.signal.clone(),
+        fuel_signal,
+    );
+    let (machine, findings) =
+        made.map_or((None, Vec::new()), |made| (Some(made.label), made.findings));
     Some(Made {
         contender: Contender {
             kind: kind.word(),
             today: around.today,
-            system: System { label, home: warm.home, heating },
+            system: System {
+                label,
+                home: warm.home,
+                heating,
+            },
             plan,
             electricity: energy.electricity.account.clone(),
             fuel: gas.map(|Supply { account, .. }| account.clone()),
@@ -99,9 +130,14 @@ pub(super) fn contender(
 }
 
 /// Money for the parts; nothing when it is wrong, nothing inside when it is not given.
-#[allow(clippy::option_option, reason = "outer: could not be read; inner: not given")]
+#[allow(
+    clippy::option_option,
+    reason = "outer: could not be read; inner: not given"
+)]
 fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> Option<Option<f64>> {
-    let Some(leaf) = &table.capital else { return Some(None) };
+    let Some(leaf) = &table.capital else {
+        return Some(None);
+    };
     let text = check.value(&table.capital)?;
     let money = match Money::parse(&text) {
         Ok(money) => money,
@@ -132,7 +168,12 @@ fn shown_year(table: &SystemTable, check: &mut Check) -> Option<u32> {
 }
 
 fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<Heating> {
-    let output = notes.quantity(check, &table.output, &bounds::OUTPUT_KW, &defaults::BOILER_OUTPUT);
+    let output = notes.quantity(
+        check,
+        &table.output,
+        &bounds::OUTPUT_KW,
+        &defaults::BOILER_OUTPUT,
+    );
     let fixed_flow = check.within(&table.fixed_flow, &bounds::FLOW_C);
     if let (Some(leaf), Some(_)) = (&table.efficiency, &table.field_factor) {
         check.refuse(
@@ -146,8 +187,15 @@ fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<H
     let efficiency = if table.efficiency.is_some() {
         BoilerEfficiency::Seasonal(check.value(&table.efficiency)?)
     } else {
-        let factor = notes.quantity(check, &table.field_factor, &bounds::FIELD_FACTOR, &defaults::BOILER_FIELD_FACTOR);
-        BoilerEfficiency::FollowingReturn { field_factor: factor?.fraction() }
+        let factor = notes.quantity(
+            check,
+            &table.field_factor,
+            &bounds::FIELD_FACTOR,
+            &defaults::BOILER_FIELD_FACTOR,
+        );
+        BoilerEfficiency::FollowingReturn {
+            field_factor: factor?.fraction(),
+        }
     };
     Some(Heating::Boiler {
         boiler: Boiler::new(output?.kw(), efficiency),
@@ -158,7 +206,9 @@ fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<H
 fn direct_electric(table: &Section<SystemTable>, check: &mut Check) -> Option<Heating> {
     check.required(&table.output, &table.span(), "output", "\"8 kW\"");
     let output = check.within(&table.output, &bounds::OUTPUT_KW)?;
-    Some(Heating::DirectElectric { output_kw: output.kw() })
+    Some(Heating::DirectElectric {
+        output_kw: output.kw(),
+    })
 }
 
 fn heat_pump(
@@ -170,14 +220,33 @@ fn heat_pump(
     notes: &mut Notes,
 ) -> Option<(Heating, Option<MachineMade>)> {
     let backup = notes.quantity(check, &table.backup, &bounds::HEATER_KW, &defaults::BACKUP);
-    let immersion = notes.quantity(check, &table.immersion, &bounds::HEATER_KW, &defaults::IMMERSION);
-    let pump = notes.quantity(check, &table.circulation_pump, &bounds::AUXILIARY_KW, &defaults::CIRCULATION_PUMP);
+    let immersion = notes.quantity(
+        check,
+        &table.immersion,
+        &bounds::HEATER_KW,
+        &defaults::IMMERSION,
+    );
+    let pump = notes.quantity(
+        check,
+        &table.circulation_pump,
+        &bounds::AUXILIARY_KW,
+        &defaults::CIRCULATION_PUMP,
+    );
     let mut made = machine(table, kind, around.folder, warm, check, notes);
     let mut findings = Vec::new();
     let source = match kind {
         SystemKind::GroundSource => {
             let machine = made.as_ref().map(|made| &made.machine);
-            ground(&Ground { table, around, machine }, check, notes, &mut findings)
+            ground(
+                &Ground {
+                    table,
+                    around,
+                    machine,
+                },
+                check,
+                notes,
+                &mut findings,
+            )
         }
         _ => Some(Source::OutdoorAir),
     };
@@ -248,9 +317,16 @@ fn only_its_own_fields(table: &SystemTable, kind: SystemKind, check: &mut Check)
         (
             kind == SystemKind::GasBoiler,
             "a boiler",
-            vec![given("efficiency", &table.efficiency), given("fixed_flow", &table.fixed_flow)],
+            vec![
+                given("efficiency", &table.efficiency),
+                given("fixed_flow", &table.fixed_flow),
+            ],
         ),
-        (!is_machine, "a boiler or an electric heater", vec![given("output", &table.output)]),
+        (
+            !is_machine,
+            "a boiler or an electric heater",
+            vec![given("output", &table.output)],
+        ),
     ];
     for (belongs, owner, fields) in groups {
         for (name, span) in fields {

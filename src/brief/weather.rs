@@ -17,7 +17,7 @@ pub(super) fn weather(
     check: &mut Check,
 ) -> Option<Weather> {
     let Some(table) = table else {
-        check.missing(&(0..0), "weather", "a table [weather] with file = \"….csv\"");
+        check.missing_table("[weather]", "file = \"….csv\"");
         return None;
     };
     let before = check.problems().len();
@@ -61,7 +61,10 @@ fn parsed<T: FromStr<Err = String>>(leaf: &Option<Leaf<String>>, check: &mut Che
         Ok(value) => Some(value),
         Err(allowed) => {
             let span = leaf.as_ref().map(Leaf::span).unwrap_or_default();
-            let allowed = allowed.strip_prefix("allowed: ").unwrap_or(&allowed).to_owned();
+            let allowed = allowed
+                .strip_prefix("allowed: ")
+                .unwrap_or(&allowed)
+                .to_owned();
             check.refuse(&span, format!("\"{text}\""), allowed, "");
             None
         }
@@ -72,7 +75,12 @@ fn skipped(leaf: &Option<Leaf<i64>>, check: &mut Check) -> Option<usize> {
     let lines = check.value(leaf)?;
     if !(0..=MOST_SKIPPED).contains(&lines) {
         let span = leaf.as_ref().map(Leaf::span).unwrap_or_default();
-        check.refuse(&span, format!("{lines} lines"), format!("0 to {MOST_SKIPPED}"), "count the lines before the heading");
+        check.refuse(
+            &span,
+            format!("{lines} lines"),
+            format!("0 to {MOST_SKIPPED}"),
+            "count the lines before the heading",
+        );
         return None;
     }
     usize::try_from(lines).ok()

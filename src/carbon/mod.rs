@@ -3,12 +3,15 @@
 //! A factor without its scope means nothing: the same gas is 0.183 kg/kWh at the flue and 0.210 with all that went
 //! before. Factors therefore come in sets of one scope, and a set is the only thing the year loop takes.
 
+mod leakage;
 mod published;
 mod scope;
 
+pub use leakage::Leakage;
 pub use published::{PUBLISHED, Published};
 pub use scope::Scope;
 
+use crate::bounds::CARBON_KG_PER_KWH;
 use crate::calendar::CivilHour;
 use crate::problem::{Place, Problem, Problems};
 use crate::series::Series;
@@ -28,6 +31,43 @@ pub enum Course {
         /// Whether one year serves for any.
         every_year: bool,
     },
+}
+
+impl Course {
+    /// An hourly intensity, with the kilograms in one unit of the series (0.001 for grams).
+    ///
+    /// # Errors
+    /// When a value lies outside [`CARBON_KG_PER_KWH`]: the first is named by its hour.
+    pub fn hourly(
+        mut series: Series,
+        kg_per_unit: f64,
+        every_year: bool,
+        place: &Place,
+    ) -> Result<Self, Problems> {
+        series.scale(kg_per_unit);
+        let outside = |value: &f64| !CARBON_KG_PER_KWH.holds(*value);
+        let Some(first) = series.values().iter().position(outside) else {
+            return Ok(Self::Hourly { series, every_year });
+        };
+        let count = series
+            .values()
+            .iter()
+            .filter(|value| outside(value))
+            .count();
+        Err(Problem::new(
+            place.clone(),
+            format!(
+                "{} kg/kWh in hour {} of {}, and {} more",
+                series.values()[first],
+                first + 1,
+                series.covers(),
+                count - 1
+            ),
+            CARBON_KG_PER_KWH.words(),
+            "is the series in grams?",
+        )
+        .into())
+    }
 }
 
 /// A carbon factor.
@@ -259,6 +299,29 @@ mod tests {
     fn a_fuel_without_factor_is_said_not_zero() {
         let set = Factors::new(vec![]).unwrap();
         assert!(set.carbon_column(Fuel::Gas, &[]).is_err());
+    }
+
+    #[test]
+    fn an_hourly_series_in_grams_is_caught_and_read_when_said() {
+        let series = Series::new("2023-01-01T00:00:00Z".parse().unwrap(), vec![180.0, 95.0]);
+        let place = Place::file("grid.csv");
+        let problems = Course::hourly(series.clone(), 1.0, false, &place).unwrap_err();
+        assert!(
+            problems.to_string().contains("is the series in grams?"),
+            "{problems}"
+        );
+        let factor = Factor {
+            fuel: Fuel::Electricity,
+            course: Course::hourly(series, 0.001, false, &place).unwrap(),
+            scope: Scope::Burning,
+            source: "test".to_owned(),
+            place,
+        };
+        let start = "2023-01-01T00:00:00Z".parse().unwrap();
+        let civil = |hours| HourAxis { start, hours }.civil(chrono_tz::Tz::UTC);
+        assert_eq!(factor.column(&civil(2)).unwrap(), [0.18, 0.095]);
+        let short = factor.column(&civil(3)).unwrap_err();
+        assert!(short.to_string().contains("for 1 of 3 hours"), "{short}");
     }
 
     #[test]

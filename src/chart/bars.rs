@@ -2,9 +2,11 @@
 
 use super::font::{self, Weight};
 use super::frame::Axis;
-use super::geometry::Point;
+use super::geometry::{Point, Rect};
+use super::key::Swatch;
+use super::label::{Anchor, BODY, SMALL, Type};
 use super::palette::{AXIS, Colour, Dash, GRID, Hatch, INK, MUTED, WHITE};
-use super::scene::{Anchor, BODY, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{Marks, named};
 
 /// One bar.

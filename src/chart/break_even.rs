@@ -3,9 +3,11 @@
 use super::ends::{self, End};
 use super::font::{self, Weight};
 use super::frame::{Axis, Frame, around};
+use super::geometry::Rect;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{Dash, INK, WHITE, series};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "break-even";
@@ -89,7 +91,7 @@ pub fn break_even(data: &BreakEven, marks: &Marks) -> Result<Picture, ChartError
             right: WIDTH - MARGIN - RIGHT + 12.0,
             bottom: top + PLOT,
         },
-        Axis::linear(&format!("{lever}, {}", data.unit), x.0, x.1, 6, marks),
+        Axis::tight(&format!("{lever}, {}", data.unit), x.0, x.1, 6, marks),
         Axis::linear(
             &format!("{outcome}, {}", money_unit(&data.currency)),
             y.0,
@@ -135,7 +137,7 @@ fn draw_crossings(scene: &mut Scene, frame: &Frame, data: &BreakEven, marks: &Ma
             ((x + 7.0, lower), Anchor::Start),
             ((x - 7.0, lower), Anchor::End),
         ];
-        scene.place(&text, &places, strong);
+        scene.place(&frame.area, &text, &places, strong);
     }
     for crossing in data.lines.iter().flat_map(|l| &l.crossings) {
         if *crossing < frame.x.low || *crossing > frame.x.high {
@@ -146,7 +148,7 @@ fn draw_crossings(scene: &mut Scene, frame: &Frame, data: &BreakEven, marks: &Ma
         scene.disc((x, y), 3.6, WHITE);
         let unit = font::fit(&data.unit, SMALL, Weight::Bold, 90.0);
         let text = format!("{}\u{a0}{unit}", marks.number(*crossing, digits));
-        scene.place_for((x, y), &text, &around(x, y, 11.0), strong);
+        scene.place_for(&frame.area, (x, y), &text, &around(x, y, 11.0), strong);
     }
 }
 

@@ -3,9 +3,11 @@
 use super::ends::{self, End};
 use super::font::{self, Weight};
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{AXIS, Dash, INK, series};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "brine through the year";
@@ -66,8 +68,8 @@ pub fn brine_year(data: &BrineYear, marks: &Marks) -> Result<Picture, ChartError
 
     let title = "Brine temperature through the year";
     let subtitle = format!(
-        "{} Brine entering the machine, hour by hour.",
-        sentence(&data.source)
+        "{} Brine entering the machine: mean of each day, and its span.",
+        sentence(&data.source, 320.0)
     );
     let mut scene = Scene::new(f64::MAX);
     let top = scene.heading(title, &subtitle);
@@ -101,14 +103,18 @@ pub fn brine_year(data: &BrineYear, marks: &Marks) -> Result<Picture, ChartError
     let mut names = Vec::new();
     for (i, line) in data.lines.iter().enumerate() {
         let look = series(i);
-        let points: Vec<(f64, f64)> = line
-            .hours_c
-            .iter()
-            .enumerate()
-            .map(|(h, t)| ((h as f64 + 0.5) / 24.0, *t))
-            .collect();
-        frame.line(&mut scene, &points, look.colour, 1.8, look.dash);
-        if let Some(last) = points.iter().rev().find(|p| p.1.is_finite()) {
+        let days = days_of(line);
+        for run in days.chunk_by(|a, b| b.day == a.day + 1.0) {
+            let upper = run.iter().map(|d| frame.at(d.day + 0.5, d.highest));
+            let lower = run.iter().rev().map(|d| frame.at(d.day + 0.5, d.lowest));
+            let band: Vec<_> = upper.chain(lower).collect();
+            scene.area(&band, look.colour.lighter(0.7), 1.0);
+        }
+        for run in days.chunk_by(|a, b| b.day == a.day + 1.0) {
+            let mean: Vec<(f64, f64)> = run.iter().map(|d| (d.day + 0.5, d.mean)).collect();
+            frame.line(&mut scene, &mean, look.colour, 2.4, look.dash);
+        }
+        if let Some(last) = days.last().map(|d| (d.day + 0.5, d.mean)) {
             names.push(End {
                 at: frame.at(last.0, last.1),
                 text: named(&line.label).into(),
@@ -121,6 +127,31 @@ pub fn brine_year(data: &BrineYear, marks: &Marks) -> Result<Picture, ChartError
     draw_levels(&mut scene, &frame, data, marks);
     draw_lowest(&mut scene, &frame, data, marks);
     Ok(Picture::new(title, alt(data, marks), scene))
+}
+
+/// One day of brine.
+struct Day {
+    day: f64,
+    lowest: f64,
+    mean: f64,
+    highest: f64,
+}
+
+/// The days on which brine flows.
+fn days_of(line: &BrineLine) -> Vec<Day> {
+    line.hours_c
+        .chunks(24)
+        .enumerate()
+        .filter_map(|(day, hours)| {
+            let flowing: Vec<f64> = hours.iter().copied().filter(|t| t.is_finite()).collect();
+            (!flowing.is_empty()).then(|| Day {
+                day: day as f64,
+                lowest: flowing.iter().copied().fold(f64::INFINITY, f64::min),
+                mean: flowing.iter().sum::<f64>() / flowing.len() as f64,
+                highest: flowing.iter().copied().fold(f64::NEG_INFINITY, f64::max),
+            })
+        })
+        .collect()
 }
 
 fn draw_months(scene: &mut Scene, frame: &Frame, data: &BrineYear, days: f64) {
@@ -179,7 +210,7 @@ fn draw_levels(scene: &mut Scene, frame: &Frame, data: &BrineYear, marks: &Marks
             ((right, y - 6.0), Anchor::End),
             ((right, y + 16.0), Anchor::End),
         ];
-        scene.place(&text, &places, set);
+        scene.place(&frame.area, &text, &places, set);
     }
 }
 
@@ -250,6 +281,10 @@ mod tests {
         };
         let picture = brine_year(&data, &Marks::default()).unwrap();
         assert!(picture.alt.contains("year 1: lowest −1.2 °C"));
+        let days = days_of(&data.lines[0]);
+        assert_eq!(days.len(), 5);
+        // The third day holds hours 48 to 71: 22 hours at 4, one at −1.2, one in which nothing flows.
+        assert!((days[2].mean - (22.0 * 4.0 - 1.2) / 23.0).abs() < 1e-12);
         let nothing = BrineYear {
             lines: vec![],
             ..data

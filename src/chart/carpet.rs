@@ -1,10 +1,12 @@
 //! A year as a carpet: one column a day, one row an hour, shaded by a quantity such as outdoor temperature.
 
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::{self, Marks};
-use super::palette::{AXIS, INK, WHITE};
+use super::palette::{AXIS, INK};
 use super::ramp;
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, font, font::Weight};
 
 const PICTURE: &str = "carpet of the year";
@@ -38,7 +40,7 @@ pub struct Spell {
 }
 
 const PLOT: f64 = 250.0;
-/// Shades that are told apart; neighbours of one shade are drawn as one.
+/// Shades that are told apart.
 const SHADES: usize = 20;
 const KEY: f64 = 260.0;
 
@@ -142,46 +144,32 @@ fn frame(data: &Carpet, days: usize, top: f64) -> Frame {
     let mut frame = Frame::inside(
         outer,
         Axis::named("", 0.0, days as f64, data.months.clone()),
-        Axis::named("Hour of day", 0.0, 24.0, hours.to_vec()),
+        Axis::named("Hour", 0.0, 24.0, hours.to_vec()),
     );
     frame.area.bottom += 18.0;
     frame
 }
 
 fn draw_cells(scene: &mut Scene, frame: &Frame, data: &Carpet, share: &dyn Fn(f64) -> f64) {
-    let area = frame.area;
-    scene.area(&area.corners(), WHITE, 1.0);
     let shade = |v: f64| ((share(v) * SHADES as f64).floor().max(0.0) as usize).min(SHADES - 1);
     let look = |s: usize| ramp::colour((s as f64 + 0.5) / SHADES as f64);
-    for hour in 0..24 {
-        let (top, bottom) = (frame.at_y(hour as f64 + 1.0), frame.at_y(hour as f64));
-        let mut run: Option<(usize, usize)> = None;
-        let mut flush = |run: Option<(usize, usize)>, end: usize| {
-            if let Some((start, s)) = run {
-                let left = frame.at_x(start as f64);
+    for (day, hours) in data.hours.chunks(24).enumerate() {
+        let (left, right) = (frame.at_x(day as f64), frame.at_x(day as f64 + 1.0));
+        // Hours of one shade, one after the other, are one piece: a day has far fewer pieces than hours.
+        let mut start = 0;
+        for piece in hours.chunk_by(|a, b| a.map(shade) == b.map(shade)) {
+            let end = start + piece.len();
+            if let Some(value) = piece[0] {
                 let cell = Rect {
                     left,
-                    top,
-                    right: frame.at_x(end as f64),
-                    bottom,
+                    right,
+                    top: frame.at_y(end as f64),
+                    bottom: frame.at_y(start as f64),
                 };
-                scene.area(&cell.corners(), look(s), 1.0);
+                scene.area(&cell.corners(), look(shade(value)), 1.0);
             }
-        };
-        let days = data.hours.len().div_ceil(24);
-        for day in 0..days {
-            let now = data
-                .hours
-                .get(day * 24 + hour)
-                .copied()
-                .flatten()
-                .map(shade);
-            if run.map(|r| r.1) != now {
-                flush(run, day);
-                run = now.map(|s| (day, s));
-            }
+            start = end;
         }
-        flush(run, days);
     }
 }
 
@@ -229,7 +217,7 @@ fn draw_spell(scene: &mut Scene, frame: &Frame, data: &Carpet, days: usize) {
         scene.line(&bracket, INK, 2.4);
     }
     let set = Type::new(SMALL, Weight::Bold, INK);
-    let clear = area.left + 90.0;
+    let clear = area.left;
     let text = font::fit(&spell.label, set.size, set.weight, area.right - clear);
     let wide = set.width(&text);
     let x = if right + wide + 8.0 <= area.right {

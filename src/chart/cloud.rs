@@ -4,8 +4,10 @@
 //! read the same in grey.
 
 use super::frame::Frame;
+use super::geometry::Rect;
+use super::key::Swatch;
 use super::palette::{Colour, Hatch, NAVY};
-use super::scene::{Rect, Scene, Swatch};
+use super::scene::Scene;
 use std::collections::BTreeMap;
 
 /// Side of a cell in points.

@@ -2,10 +2,13 @@
 
 use super::font::{self, Weight};
 use super::frame::{Axis, Frame};
-use super::geometry::Point;
+use super::geometry::{Point, Rect};
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
+use super::layers::{self, Layer};
 use super::numbers::Marks;
 use super::palette::{AXIS, AZURE, CORAL, Dash, GRID, Hatch, INK, NAVY, OCHRE, TEAL};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "coldest days";
@@ -55,7 +58,10 @@ const GAP: f64 = 32.0;
 pub fn coldest_days(data: &ColdestDays, marks: &Marks) -> Result<Picture, ChartError> {
     check(data)?;
     let title = "The coldest days, hour by hour";
-    let subtitle = format!("{} On the clock of the home.", sentence(&data.system));
+    let subtitle = format!(
+        "{} On the clock of the home.",
+        sentence(&data.system, 320.0)
+    );
     let mut scene = Scene::new(f64::MAX);
     let below = scene.heading(title, &subtitle);
     let main = named(&data.main_heater);
@@ -277,47 +283,25 @@ fn note_extreme(
 }
 
 fn draw_heat(scene: &mut Scene, frame: &Frame, data: &ColdestDays) {
-    let layers: [(fn(&ColdHour) -> f64, _, _); 3] = [
-        (|h| h.main_kw, TEAL, Hatch::Plain),
-        (|h| h.main_kw + h.backup_kw, CORAL, Hatch::Rising),
-        (
-            |h| h.main_kw + h.backup_kw + short(h),
-            OCHRE,
-            Hatch::Crossed,
-        ),
-    ];
-    let mut base: Vec<Point> = steps(data, |_| 0.0)
-        .iter()
-        .map(|&(x, y)| frame.at(x, y))
-        .collect();
-    for (value, colour, hatch) in layers {
-        let upper: Vec<Point> = steps(data, value)
-            .iter()
-            .map(|&(x, y)| frame.at(x, y))
-            .collect();
-        // Runs of hours with something in this layer, each a shape of its own.
-        let mut start = 0;
-        while start < upper.len() {
-            let filled = |i: usize| (base[i].1 - upper[i].1).abs() > 0.02;
-            if !filled(start) {
-                start += 1;
-                continue;
-            }
-            let end = (start..upper.len())
-                .find(|&i| !filled(i))
-                .unwrap_or(upper.len());
-            let shape: Vec<Point> = upper[start..end]
-                .iter()
-                .copied()
-                .chain(base[start..end].iter().rev().copied())
-                .collect();
-            scene.hatched(&shape, colour, hatch);
-            start = end;
-        }
-        base = upper;
-    }
-    let demand = steps(data, |h| h.demand_kw);
-    frame.line(scene, &demand, INK, 2.0, Dash::Solid);
+    let layer = |upper: fn(&ColdHour) -> f64, colour, hatch| Layer {
+        upper: steps(data, upper),
+        colour,
+        hatch,
+    };
+    layers::draw(
+        scene,
+        frame,
+        &[
+            layer(|h| h.main_kw, TEAL, Hatch::Plain),
+            layer(|h| h.main_kw + h.backup_kw, CORAL, Hatch::Rising),
+            layer(
+                |h| h.main_kw + h.backup_kw + short(h),
+                OCHRE,
+                Hatch::Crossed,
+            ),
+        ],
+    );
+    frame.line(scene, &steps(data, |h| h.demand_kw), INK, 2.0, Dash::Solid);
 }
 
 fn draw_electricity(scene: &mut Scene, frame: &Frame, data: &ColdestDays, marks: &Marks) {
@@ -346,10 +330,22 @@ fn draw_indoor(scene: &mut Scene, frame: &Frame, data: &ColdestDays, marks: &Mar
         .min_by(|a, b| a.1.total_cmp(&b.1));
     note_extreme(scene, frame, lowest, "°C", marks);
     if let Some(set_point) = data.set_point_c {
-        let (x, y) = (frame.area.right - 4.0, frame.at_y(set_point));
+        let (left, right) = (frame.area.left + 6.0, frame.area.right - 6.0);
+        let y = frame.at_y(set_point);
         let text = format!("asked for {}\u{a0}°C", marks.number(set_point, 1));
-        let places = [((x, y - 6.0), Anchor::End), ((x, y + 16.0), Anchor::End)];
-        scene.place(&text, &places, Type::small());
+        let places: Vec<_> = [1.0, 0.75, 0.5, 0.25, 0.0]
+            .into_iter()
+            .flat_map(|share: f64| {
+                let x = left + share * (right - left);
+                let anchor = match share {
+                    0.0 => Anchor::Start,
+                    1.0 => Anchor::End,
+                    _ => Anchor::Middle,
+                };
+                [((x, y - 6.0), anchor), ((x, y + 16.0), anchor)]
+            })
+            .collect();
+        scene.place(&frame.area, &text, &places, Type::small());
     }
 }
 

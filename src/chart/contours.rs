@@ -1,12 +1,15 @@
 //! Saving over two prices: lines of equal saving, the zero line, today's point, lines of constant price ratio.
 
-use super::font::{self, Weight};
+use super::font::Weight;
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
 use super::isolines::isolines;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::{self, Marks};
 use super::palette::{AXIS, Dash, INK, NAVY, OCHRE, WHITE};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
-use super::{ChartError, Picture, finite, named};
+use super::scene::{MARGIN, Scene, WIDTH};
+use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "saving over two prices";
 
@@ -43,8 +46,8 @@ const PLOT: f64 = 430.0;
 pub fn contours(data: &Contours, marks: &Marks) -> Result<Picture, ChartError> {
     check(data)?;
     let title = "Where it pays, over both prices";
-    let outcome = font::fit(named(&data.outcome), SMALL, Weight::Regular, 420.0);
-    let subtitle = format!("{outcome}. Each line joins prices with the same result.");
+    let outcome = sentence(&data.outcome, 420.0);
+    let subtitle = format!("{outcome} Each line joins prices with the same result.");
     let mut scene = Scene::new(f64::MAX);
     let below = scene.heading(title, &subtitle);
     let mut entries = vec![
@@ -75,12 +78,13 @@ pub fn contours(data: &Contours, marks: &Marks) -> Result<Picture, ChartError> {
     );
     frame.draw(&mut scene);
     frame.border(&mut scene);
-    draw_ratios(&mut scene, &frame, data, marks);
+    draw_ratios(&mut scene, &frame, data);
     let lines = draw_levels(&mut scene, &frame, data);
     draw_now(&mut scene, &frame, data, marks);
     for (level, line) in &lines {
         label_level(&mut scene, &frame, data, *level, line, marks);
     }
+    label_ratios(&mut scene, &frame, data, marks);
     let zero = lines.iter().any(|(level, _)| *level == 0.0);
     Ok(Picture::new(title, alt(data, zero, marks), scene))
 }
@@ -122,7 +126,7 @@ fn draw_levels(scene: &mut Scene, frame: &Frame, data: &Contours) -> Vec<(f64, V
     let all = || data.values.iter().flatten().copied();
     let low = all().fold(f64::INFINITY, f64::min);
     let high = all().fold(f64::NEG_INFINITY, f64::max);
-    let mut levels = numbers::ticks(low, high, 8).values;
+    let mut levels = numbers::ticks(low, high, 12).values;
     // Zero is a multiple of every step, but make sure of it: it is what the picture is for.
     if !levels.iter().any(|l| l.abs() < 1e-9) {
         levels.push(0.0);
@@ -171,23 +175,30 @@ fn label_level(
         })
         .map(|(x, y)| ((x, y + 4.6), Anchor::Middle))
         .collect();
-    scene.place(&text, &places, set);
+    scene.place(&frame.area, &text, &places, set);
 }
 
-fn draw_ratios(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks) {
+fn draw_ratios(scene: &mut Scene, frame: &Frame, data: &Contours) {
     for ratio in data.ratios.iter().filter(|r| **r > 0.0) {
         let ends = [
             (frame.x.low, frame.x.low / ratio),
             (frame.x.high, frame.x.high / ratio),
         ];
         frame.line(scene, &ends, AXIS, 1.8, Dash::Dotted);
+    }
+}
+
+/// Names of the ratio lines, written when all lines are drawn.
+fn label_ratios(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks) {
+    for ratio in data.ratios.iter().filter(|r| **r > 0.0) {
         // The end that leaves through the top or the right edge.
         let x = (ratio * frame.y.high).min(frame.x.high);
         let (px, py) = frame.at(x, x / ratio);
-        let text = format!(
-            "{}\u{a0}:\u{a0}1",
-            marks.number(*ratio, usize::from(ratio.fract() != 0.0))
-        );
+        let decimals = [0, 1]
+            .into_iter()
+            .find(|d| is_round(*ratio, *d))
+            .unwrap_or(2);
+        let text = format!("{}\u{a0}:\u{a0}1", marks.number(*ratio, decimals));
         let places = [
             ((px - 4.0, py + 18.0), Anchor::End),
             ((px - 8.0, py - 6.0), Anchor::End),
@@ -198,9 +209,15 @@ fn draw_ratios(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks)
             top: py,
             bottom: py,
         }) {
-            scene.place(&text, &places, Type::small());
+            scene.place(&frame.area, &text, &places, Type::small());
         }
     }
+}
+
+/// Whether `value` is written in full with so many decimals.
+fn is_round(value: f64, decimals: usize) -> bool {
+    let scaled = value * 10_f64.powi(decimals as i32);
+    (scaled - scaled.round()).abs() < 1e-9
 }
 
 fn draw_now(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks) {
@@ -218,7 +235,13 @@ fn draw_now(scene: &mut Scene, frame: &Frame, data: &Contours, marks: &Marks) {
     scene.disc(at, 7.0, OCHRE);
     let text = format!("now {} and {}", marks.number(x, 1), marks.number(y, 1));
     let set = Type::new(SMALL, Weight::Bold, INK);
-    scene.place_for(at, &text, &super::frame::around(at.0, at.1, 12.0), set);
+    scene.place_for(
+        &frame.area,
+        at,
+        &text,
+        &super::frame::around(at.0, at.1, 12.0),
+        set,
+    );
 }
 
 fn alt(data: &Contours, zero: bool, marks: &Marks) -> String {

@@ -4,9 +4,12 @@ use super::bars::draw_name;
 use super::cloud;
 use super::font::Weight;
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{BROWN, Dash, INK};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, font, named};
 
 const PICTURE: &str = "COP through the year";

@@ -3,9 +3,11 @@
 use super::ends::{self, End};
 use super::font::Weight;
 use super::frame::{Axis, Frame, around};
+use super::geometry::Rect;
+use super::label::{SMALL, Type};
 use super::numbers::{self, Marks, money_unit};
 use super::palette::{INK, WHITE, series};
-use super::scene::{MARGIN, Rect, SMALL, Scene, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "spend over the years";
@@ -38,7 +40,7 @@ const RIGHT: f64 = 190.0;
 /// Draws the spend.
 ///
 /// # Errors
-/// [`ChartError::Empty`] without years, [`ChartError::NotFinite`] for a value that is not a number.
+/// [`ChartError::Empty`] without years, [`ChartError::Uneven`] when systems differ in years, [`ChartError::NotFinite`] for a value that is not a number.
 pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture, ChartError> {
     let years = data
         .systems
@@ -50,6 +52,17 @@ pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture
         return Err(ChartError::Empty {
             picture: PICTURE,
             missing: "fewer than two years were given",
+        });
+    }
+    if data.systems.iter().any(|s| s.spent.len() != years) {
+        let lengths: Vec<String> = data
+            .systems
+            .iter()
+            .map(|s| s.spent.len().to_string())
+            .collect();
+        return Err(ChartError::Uneven {
+            picture: PICTURE,
+            what: format!("years of the systems: {}", numbers::list(&lengths)),
         });
     }
     for s in &data.systems {
@@ -118,7 +131,7 @@ pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture
         scene.disc((x, y), 6.5, INK);
         scene.disc((x, y), 3.6, WHITE);
         let text = format!("year {}", marks.number(year, 1));
-        scene.place_for((x, y), &text, &around(x, y, 12.0), set);
+        scene.place_for(&frame.area, (x, y), &text, &around(x, y, 12.0), set);
     }
     Ok(Picture::new(title, alt(data, marks), scene))
 }

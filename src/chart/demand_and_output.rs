@@ -1,9 +1,12 @@
 //! Heat demand of every hour against outdoor temperature, with what the machine can give and the balance point.
 
 use super::frame::{Axis, Frame, around};
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{BROWN, Dash, INK, OCHRE};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, cloud, finite, font::Weight, named, sentence};
 
 const PICTURE: &str = "demand and output";
@@ -53,7 +56,7 @@ pub fn demand_and_output(data: &DemandAndOutput, marks: &Marks) -> Result<Pictur
     let above = data.hours.iter().filter(|h| short(data, h.0, h.1)).count();
     let subtitle = format!(
         "{} Each cell counts hours of the year.",
-        sentence(&data.system)
+        sentence(&data.system, 320.0)
     );
     let mut scene = Scene::new(f64::MAX);
     let top = scene.heading(title, &subtitle);
@@ -73,6 +76,7 @@ pub fn demand_and_output(data: &DemandAndOutput, marks: &Marks) -> Result<Pictur
         let x = frame.at_x(balance);
         let y = frame.area.top + 18.0;
         scene.place(
+            &frame.area,
             &text,
             &[((x + 7.0, y), Anchor::Start), ((x - 7.0, y), Anchor::End)],
             strong,
@@ -104,6 +108,7 @@ pub fn demand_and_output(data: &DemandAndOutput, marks: &Marks) -> Result<Pictur
         ];
         places.extend(around(x, y, 12.0));
         scene.place_for(
+            &frame.area,
             (x, y),
             &text,
             &places,

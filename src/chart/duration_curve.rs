@@ -2,10 +2,12 @@
 
 use super::font::Weight;
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{Dash, INK, NAVY, WHITE};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Type, WIDTH};
-use super::{ChartError, Picture, finite, font, sentence};
+use super::scene::{MARGIN, Scene, WIDTH};
+use super::{ChartError, Picture, finite, font, named, sentence};
 
 const PICTURE: &str = "duration curve";
 
@@ -48,7 +50,7 @@ pub fn duration_curve(data: &DurationCurve, marks: &Marks) -> Result<Picture, Ch
     let title = "How long it is how cold";
     let subtitle = format!(
         "{} Outdoor temperature of every hour, coldest first.",
-        sentence(&data.place)
+        sentence(&data.place, 320.0)
     );
     let mut scene = Scene::new(f64::MAX);
     let top = scene.heading(title, &subtitle);
@@ -105,11 +107,12 @@ fn draw_level(
     scene.disc((x, y), 5.0, INK);
     scene.disc((x, y), 2.6, WHITE);
     let set = Type::new(SMALL, Weight::Regular, INK);
+    let name = font::fit(named(name), set.size, set.weight, 200.0);
     let what = format!("{name} {}\u{a0}°C", marks.number(level, 1));
-    let what = font::fit(&what, set.size, set.weight, 250.0);
     let text = format!("{what}: {} colder", marks.count(hours, "hour"));
     let left = frame.area.left + 8.0;
     scene.place(
+        &frame.area,
         &text,
         &[
             ((left, y - 7.0), Anchor::Start),

@@ -2,11 +2,14 @@
 
 use super::font::{self, Weight};
 use super::frame::Frame;
+use super::label::{Anchor, SMALL, Type};
 use super::palette::{Colour, INK};
-use super::scene::{Anchor, SMALL, Scene, Type};
+use super::scene::Scene;
 
-/// Distance of two names from base line to base line.
-const STEP: f64 = 17.0;
+/// Height of a line of a name.
+const LINE: f64 = 16.5;
+/// Most lines of a name.
+const LINES: usize = 2;
 
 /// The end of one line.
 pub(crate) struct End {
@@ -17,44 +20,59 @@ pub(crate) struct End {
     pub bold: bool,
 }
 
-/// Writes the names right of the frame in a column of `room`, with a thin line to each end that had to move.
+/// Writes the names right of the frame in a column of `room`, each with a thin line to its end.
 pub(crate) fn draw(scene: &mut Scene, frame: &Frame, ends: &[End], room: f64) {
-    let mut order: Vec<usize> = (0..ends.len()).collect();
-    order.sort_by(|&a, &b| ends[a].at.1.total_cmp(&ends[b].at.1));
-    let bases = spread(
-        &order.iter().map(|&i| ends[i].at.1).collect::<Vec<_>>(),
-        frame.area.top,
-        frame.area.bottom,
-    );
+    let mut names: Vec<(&End, Type, Vec<String>)> = ends
+        .iter()
+        .map(|end| {
+            let weight = if end.bold {
+                Weight::Bold
+            } else {
+                Weight::Regular
+            };
+            let set = Type::new(SMALL, weight, INK);
+            (
+                end,
+                set,
+                font::wrap(&end.text, set.size, weight, room - 18.0, LINES),
+            )
+        })
+        .collect();
+    names.sort_by(|a, b| a.0.at.1.total_cmp(&b.0.at.1));
+    let wanted: Vec<(f64, f64)> = names
+        .iter()
+        .map(|(end, _, lines)| (end.at.1, LINE * lines.len() as f64))
+        .collect();
     let left = frame.area.right + 16.0;
-    for (&i, base) in order.iter().zip(bases) {
-        let end = &ends[i];
-        let weight = if end.bold {
-            Weight::Bold
-        } else {
-            Weight::Regular
-        };
-        let set = Type::new(SMALL, weight, INK);
-        scene.line(
-            &[(end.at.0 + 4.0, end.at.1), (left - 3.0, base)],
-            end.colour,
-            1.0,
-        );
-        let text = font::fit(&end.text, set.size, set.weight, room - 18.0);
-        scene.text(&text, (left, base + 4.6), Anchor::Start, set);
+    let middles = spread(
+        &wanted,
+        frame.area.top - LINE / 2.0,
+        frame.area.bottom + LINE / 2.0,
+    );
+    for ((end, set, lines), middle) in names.iter().zip(middles) {
+        let from = (end.at.0 + 4.0, end.at.1);
+        scene.line(&[from, (left - 3.0, middle)], end.colour, 1.0);
+        let first = middle - LINE * (lines.len() as f64 - 1.0) / 2.0 + 4.6;
+        for (i, line) in lines.iter().enumerate() {
+            scene.text(line, (left, first + LINE * i as f64), Anchor::Start, *set);
+        }
     }
 }
 
-/// Heights at least a step apart, as close to the wanted ones as they can be, inside the room if it is large enough.
-fn spread(wanted: &[f64], top: f64, bottom: f64) -> Vec<f64> {
-    let mut out = wanted.to_vec();
-    for i in 1..out.len() {
-        out[i] = out[i].max(out[i - 1] + STEP);
+/// Middles of blocks of given height that do not overlap, as close to the wanted ones as they can be, inside the room
+/// if it is large enough. `wanted` holds middle and height, from the top.
+fn spread(wanted: &[(f64, f64)], top: f64, bottom: f64) -> Vec<f64> {
+    let mut out: Vec<f64> = wanted.iter().map(|w| w.0).collect();
+    let mut ceiling = top;
+    for (y, (_, height)) in out.iter_mut().zip(wanted) {
+        *y = y.max(ceiling + height / 2.0);
+        ceiling = *y + height / 2.0;
     }
-    let mut floor = bottom.max(top + STEP * out.len().saturating_sub(1) as f64);
-    for y in out.iter_mut().rev() {
-        *y = y.min(floor);
-        floor = *y - STEP;
+    let all: f64 = wanted.iter().map(|w| w.1).sum();
+    let mut floor = bottom.max(top + all);
+    for (y, (_, height)) in out.iter_mut().zip(wanted).rev() {
+        *y = y.min(floor - height / 2.0);
+        floor = *y - height / 2.0;
     }
     out
 }
@@ -64,13 +82,17 @@ mod tests {
     use super::*;
 
     #[test]
-    fn spread_keeps_a_step_and_the_room() {
-        let out = spread(&[100.0, 101.0, 102.0, 199.0], 0.0, 200.0);
-        assert!(
-            out.windows(2).all(|p| p[1] - p[0] >= STEP - 1e-9),
-            "{out:?}"
+    fn spread_keeps_blocks_apart_and_in_the_room() {
+        let wanted = [(100.0, 17.0), (101.0, 34.0), (102.0, 17.0), (199.0, 17.0)];
+        let out = spread(&wanted, 0.0, 200.0);
+        for i in 1..out.len() {
+            let least = (wanted[i - 1].1 + wanted[i].1) / 2.0;
+            assert!(out[i] - out[i - 1] >= least - 1e-9, "{out:?}");
+        }
+        assert!(out[3] + 8.5 <= 200.0 && out[0] - 8.5 >= 0.0);
+        assert_eq!(
+            spread(&[(10.0, 17.0), (90.0, 17.0)], 0.0, 200.0),
+            [10.0, 90.0]
         );
-        assert!(out[3] <= 200.0 && out[0] >= 0.0);
-        assert_eq!(spread(&[10.0, 90.0], 0.0, 200.0), [10.0, 90.0]);
     }
 }

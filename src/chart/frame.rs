@@ -1,9 +1,10 @@
 //! The plot area of a picture: two axes with ticks, titles with units, a light grid, and the way from values to points.
 
-use super::geometry::{self, Point};
+use super::geometry::{self, Point, Rect};
+use super::label::{Anchor, Type};
 use super::numbers::{self, Marks};
 use super::palette::{AXIS, Colour, Dash, GRID, INK};
-use super::scene::{Anchor, Rect, Scene, Type};
+use super::scene::Scene;
 
 /// One axis: its ends, its ticks with what is written at them, and its title with the unit.
 #[derive(Debug, Clone)]
@@ -259,8 +260,8 @@ impl Frame {
     /// Writes `text` near the point of a pair of values, wherever there is room next to it; not at all otherwise.
     pub(crate) fn note(&self, scene: &mut Scene, text: &str, x: f64, y: f64) {
         let (px, py) = self.at(x, y);
-        let set = Type::new(super::scene::SMALL, super::font::Weight::Regular, INK);
-        scene.place_for((px, py), text, &around(px, py, 9.0), set);
+        let set = Type::new(super::label::SMALL, super::font::Weight::Regular, INK);
+        scene.place_for(&self.area, (px, py), text, &around(px, py, 9.0), set);
     }
 }
 

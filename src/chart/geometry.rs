@@ -1,10 +1,62 @@
 //! Plane geometry of the pictures: dashes along a line, hatch lines inside a polygon, lines cut at a rectangle.
 
 use super::palette::Hatch;
-use super::scene::Rect;
 
 /// A point on the canvas in points, y downwards.
 pub(crate) type Point = (f64, f64);
+
+/// A rectangle on the canvas, y downwards.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Rect {
+    /// Left edge.
+    pub left: f64,
+    /// Upper edge.
+    pub top: f64,
+    /// Right edge.
+    pub right: f64,
+    /// Lower edge.
+    pub bottom: f64,
+}
+
+impl Rect {
+    /// Whether two rectangles share more than an edge.
+    pub fn overlaps(&self, other: &Rect) -> bool {
+        self.left < other.right
+            && other.left < self.right
+            && self.top < other.bottom
+            && other.top < self.bottom
+    }
+
+    /// Whether `other` lies wholly inside.
+    pub fn contains(&self, other: &Rect) -> bool {
+        self.left <= other.left
+            && self.top <= other.top
+            && self.right >= other.right
+            && self.bottom >= other.bottom
+    }
+
+    pub(crate) fn contains_point(&self, p: Point) -> bool {
+        (self.left..=self.right).contains(&p.0) && (self.top..=self.bottom).contains(&p.1)
+    }
+
+    pub(crate) fn grown(&self, by: f64) -> Rect {
+        Rect {
+            left: self.left - by,
+            top: self.top - by,
+            right: self.right + by,
+            bottom: self.bottom + by,
+        }
+    }
+
+    pub(crate) fn corners(&self) -> [Point; 4] {
+        [
+            (self.left, self.top),
+            (self.right, self.top),
+            (self.right, self.bottom),
+            (self.left, self.bottom),
+        ]
+    }
+}
 
 /// Distance between hatch lines in points.
 const HATCH_STEP: f64 = 6.0;
@@ -326,5 +378,20 @@ mod tests {
         assert_eq!(thin.first(), line.first());
         assert_eq!(thin.last(), line.last());
         assert!(thin.contains(&line[4321]));
+    }
+
+    #[test]
+    fn rectangles_that_share_an_edge_do_not_overlap() {
+        let a = Rect {
+            left: 0.0,
+            top: 0.0,
+            right: 10.0,
+            bottom: 10.0,
+        };
+        let b = Rect {
+            left: 10.0,
+            ..a.grown(5.0)
+        };
+        assert!(!a.overlaps(&b) && a.overlaps(&a.grown(-2.0)));
     }
 }

@@ -1,10 +1,12 @@
 //! Heat load in order of size: how many hours the machine carries alone, and what backup adds at the top.
 
 use super::frame::{Axis, Frame};
-use super::geometry::Point;
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::layers::{self, Layer};
 use super::numbers::{self, Marks};
 use super::palette::{CORAL, Colour, Dash, Hatch, INK, OCHRE, TEAL};
-use super::scene::{MARGIN, Rect, Scene, Swatch, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "load duration";
@@ -46,7 +48,7 @@ pub fn load_duration(data: &LoadDuration, marks: &Marks) -> Result<Picture, Char
     let title = "Heat load in order of size";
     let subtitle = format!(
         "{} Hour by hour, the largest load first.",
-        sentence(&data.system)
+        sentence(&data.system, 320.0)
     );
     let mut scene = Scene::new(f64::MAX);
     let below = scene.heading(title, &subtitle);
@@ -158,33 +160,23 @@ fn energy(loads: &[[f64; 3]]) -> [f64; 3] {
 fn draw_panel(scene: &mut Scene, frame: &Frame, loads: &[[f64; 3]]) {
     frame.draw(scene);
     let columns = columns(frame, loads);
-    let mut base: Vec<Point> = columns.iter().map(|c| frame.at(c.0, 0.0)).collect();
-    let mut level: Vec<f64> = vec![0.0; columns.len()];
-    for (i, (_, colour, hatch)) in LAYERS.iter().enumerate() {
-        if columns.iter().all(|c| c.1[i] <= 0.0) {
-            continue;
-        }
-        for (sum, column) in level.iter_mut().zip(&columns) {
-            *sum += column.1[i];
-        }
-        let upper: Vec<Point> = columns
+    let upper = |layer: usize| -> Vec<(f64, f64)> {
+        columns
             .iter()
-            .zip(&level)
-            .map(|(c, kw)| frame.at(c.0, *kw))
-            .collect();
-        let shape: Vec<Point> = upper
-            .iter()
-            .copied()
-            .chain(base.iter().rev().copied())
-            .collect();
-        scene.hatched(&shape, *colour, *hatch);
-        base = upper;
-    }
-    let line: Vec<(f64, f64)> = columns
+            .map(|(hour, parts)| (*hour, parts[..=layer].iter().sum()))
+            .collect()
+    };
+    let stack: Vec<Layer> = LAYERS
         .iter()
-        .zip(&level)
-        .map(|(c, kw)| (c.0, *kw))
+        .enumerate()
+        .map(|(i, (_, colour, hatch))| Layer {
+            upper: upper(i),
+            colour: *colour,
+            hatch: *hatch,
+        })
         .collect();
+    layers::draw(scene, frame, &stack);
+    let line = upper(LAYERS.len() - 1);
     frame.line(scene, &line, INK, 1.6, Dash::Solid);
 }
 

@@ -3,9 +3,12 @@
 use super::ends::{self, End};
 use super::font::Weight;
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{AXIS, Dash, GRID, Hatch, INK, Mark, Series, WHITE, series};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "machine performance";
@@ -69,7 +72,7 @@ pub fn machine_performance(
 ) -> Result<Picture, ChartError> {
     check(data)?;
     let title = "Output and COP of the machine";
-    let mut subtitle = format!("{} Lines: the model.", sentence(&data.machine));
+    let mut subtitle = format!("{} Lines: the model.", sentence(&data.machine, 320.0));
     if !data.tested.is_empty() {
         subtitle += " Points: tested, from the datasheet.";
     }
@@ -101,10 +104,12 @@ pub fn machine_performance(
     let top = scene.key(&entries, MARGIN, below, WIDTH - 2.0 * MARGIN);
     let panel = PLOT + super::frame::ABOVE + super::frame::BELOW;
     scene.height = top + 2.0 * panel + 4.0;
-    for (i, pick) in [OUTPUT, COP].into_iter().enumerate() {
-        let y = top + panel * i as f64;
-        let frame = frame(data, &pick, y, panel, marks);
-        draw_panel(&mut scene, &frame, data, &pick, marks);
+    let picks = [OUTPUT, COP];
+    let mut frames = [0, 1].map(|i| frame(data, &picks[i], top + panel * i as f64, panel, marks));
+    let left = frames[0].area.left.max(frames[1].area.left);
+    for (frame, pick) in frames.iter_mut().zip(&picks) {
+        frame.area.left = left;
+        draw_panel(&mut scene, frame, data, pick, marks);
     }
     Ok(Picture::new(title, alt(data, marks), scene))
 }

@@ -5,8 +5,10 @@
 //! drawing.
 //!
 //! The layers, from the bottom: `font` (embedded typeface, widths), `palette` (colours and second cues), `geometry`
-//! (dashes, hatches, clipping), `scene` (shapes and labels with their boxes), `paint` (plotters: SVG and PNG),
-//! `numbers` (marks of the place, ticks), `frame` (plot area with axes), then one file a picture.
+//! (dashes, hatches, clipping), `scene` (shapes), `label` (texts with their boxes, placed where there is room), `key`
+//! (title and key), `paint` (plotters: SVG and PNG), `numbers` (marks of the place, ticks), `frame` (plot area with
+//! axes), helpers that several pictures share (`bars`, `cloud`, `ends`, `isolines`, `layers`, `ramp`), then one file a
+//! picture.
 //!
 //! # To add a picture
 //! 1. Write `src/chart/NAME.rs`: a struct that holds what is drawn, in the units of the axes, and
@@ -16,8 +18,9 @@
 //!    write labels on data with `place` or `Frame::note`, which look for free room. Take looks from `palette::series`
 //!    or one of the named colours with a hatch or dash, never a colour alone. Units stand in every axis title.
 //! 4. Write the alt text from the data: what kind of picture, of what, and the two or three figures it is drawn for.
-//! 5. Add a realistic and the hostile cases to `tests/chart_gallery.rs`: it checks that labels are apart and on the
-//!    canvas and that the SVG is well-formed, and writes the PNG for you to look at.
+//! 5. Add a realistic and the hostile cases to `tests/chart_gallery/`: it checks that labels are apart and on the
+//!    canvas and that the SVG is well-formed, and writes the PNG under `target/tmp/gallery` for you to look at. A case
+//!    whose name ends in `_realistic` is compared with what is stored of it.
 
 mod bars;
 mod cloud;
@@ -26,6 +29,9 @@ mod font;
 mod frame;
 mod geometry;
 mod isolines;
+mod key;
+mod label;
+mod layers;
 mod numbers;
 mod paint;
 mod palette;
@@ -61,6 +67,8 @@ pub use cumulative_spend::{CumulativeSpend, SystemSpend, cumulative_spend};
 pub use demand_and_output::{DemandAndOutput, demand_and_output};
 pub use duration_curve::{DurationCurve, duration_curve};
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
+pub use geometry::Rect;
+pub use label::Label;
 pub use load_duration::{LoadDuration, load_duration};
 pub use machine_performance::{FlowCurve, MachinePerformance, TestedPoint, machine_performance};
 pub use monthly::{Monthly, MonthlySystem, monthly};
@@ -68,7 +76,7 @@ pub use numbers::Marks;
 pub use paint::PNG_PIXELS;
 pub use palette::Colour;
 pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
-pub use scene::{Label, Rect, WIDTH};
+pub use scene::WIDTH;
 pub use swings::{Swing, Swings, swings};
 
 use std::fmt;
@@ -137,7 +145,7 @@ pub enum ChartError {
         /// What is missing.
         missing: &'static str,
     },
-    /// A number is not one.
+    /// A number is not one, or too large to be drawn.
     NotFinite {
         /// The picture.
         picture: &'static str,
@@ -177,7 +185,7 @@ impl fmt::Display for ChartError {
                 value,
             } => write!(
                 f,
-                "the picture “{picture}” needs a finite number for {what}, found {value}"
+                "the picture “{picture}” needs a number below 10¹² for {what}, found {value}"
             ),
             Self::Uneven { picture, what } => {
                 write!(
@@ -193,13 +201,16 @@ impl fmt::Display for ChartError {
 
 impl std::error::Error for ChartError {}
 
-/// Refuses the first of `values` that is not a finite number.
+/// Larger numbers are no money, energy or temperature of a home, and their figures would not fit.
+const LARGEST: f64 = 1e12;
+
+/// Refuses the first of `values` that is not a number or too large to be drawn.
 fn finite<'a>(
     picture: &'static str,
     values: impl IntoIterator<Item = (&'a str, f64)>,
 ) -> Result<(), ChartError> {
     for (what, value) in values {
-        if !value.is_finite() {
+        if !value.is_finite() || value.abs() > LARGEST {
             return Err(ChartError::NotFinite {
                 picture,
                 what: what.to_string(),
@@ -219,9 +230,9 @@ fn named(label: &str) -> &str {
     }
 }
 
-/// A name as the first sentence of a subtitle: short, and closed with a full stop.
-fn sentence(label: &str) -> String {
-    let name = font::fit(named(label), scene::SMALL, font::Weight::Regular, 320.0);
+/// A name as the first sentence of a subtitle: at most `room` wide, and closed with a full stop.
+fn sentence(label: &str, room: f64) -> String {
+    let name = font::fit(named(label), label::SMALL, font::Weight::Regular, room);
     if name.ends_with(['.', '…', '!', '?']) {
         name
     } else {

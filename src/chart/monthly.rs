@@ -1,11 +1,14 @@
 //! Month by month, system by system: what it costs and how much energy is bought.
 
 use super::bars::draw_name;
-use super::font::Weight;
+use super::font::{self, Weight};
 use super::frame::{Axis, Frame};
+use super::geometry::Rect;
+use super::key::Swatch;
+use super::label::{Anchor, SMALL, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{AXIS, AZURE, BROWN, Colour, Hatch, INK, NAVY};
-use super::scene::{Anchor, MARGIN, Rect, SMALL, Scene, Swatch, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "month by month";
@@ -78,8 +81,9 @@ pub fn monthly(data: &Monthly, marks: &Marks) -> Result<Picture, ChartError> {
 
     for (i, system) in data.systems.iter().enumerate() {
         let y = top + BLOCK * i as f64;
-        let sums = sums(data, system, marks);
         let set = Type::new(SMALL, Weight::Regular, INK);
+        let sums = sums(data, system, marks);
+        let sums = font::fit(&sums, set.size, set.weight, WIDTH - 2.0 * MARGIN - 200.0);
         scene.text(&sums, (WIDTH - MARGIN - 12.0, y + 16.0), Anchor::End, set);
         let room = WIDTH - 3.0 * MARGIN - 16.0 - set.width(&sums);
         draw_name(

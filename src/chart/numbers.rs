@@ -76,13 +76,29 @@ pub(crate) fn symbol(currency: &str) -> String {
         "GBP" => "£".into(),
         "EUR" => "€".into(),
         "USD" => "$".into(),
-        other => format!("{other}\u{a0}"),
+        other => {
+            let code: String = super::font::clean(other)
+                .chars()
+                .take(LONGEST_CODE)
+                .collect();
+            if code.trim().is_empty() {
+                String::new()
+            } else {
+                format!("{code}\u{a0}")
+            }
+        }
     }
 }
 
+/// Letters kept of a currency code; a real one has three.
+const LONGEST_CODE: usize = 5;
+
 /// The unit of money as it stands in an axis title.
 pub(crate) fn money_unit(currency: &str) -> String {
-    symbol(currency).trim_end().to_string()
+    match symbol(currency).trim_end() {
+        "" => "currency not given".into(),
+        unit => unit.into(),
+    }
 }
 
 /// Ticks of a linear axis: multiples of 1, 2 or 5 × a power of ten.

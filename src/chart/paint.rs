@@ -5,8 +5,9 @@
 
 use super::font::{self, Weight};
 use super::geometry::Point;
+use super::label::{Anchor, Label};
 use super::palette::Colour;
-use super::scene::{Anchor, Item, Label, Scene, WIDTH};
+use super::scene::{Item, Scene, WIDTH};
 use super::{ChartError, Picture};
 use ab_glyph::{Font as _, point};
 use plotters::backend::{BitMapBackend, DrawingBackend, SVGBackend};

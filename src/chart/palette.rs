@@ -78,7 +78,7 @@ pub enum Dash {
     /// Dots.
     Dotted,
     /// A dash and a dot in turn.
-    DashDot,
+    Alternating,
 }
 
 impl Dash {
@@ -89,7 +89,7 @@ impl Dash {
             Dash::Long => &[12.0, 5.0],
             Dash::Short => &[6.0, 4.0],
             Dash::Dotted => &[2.0, 4.0],
-            Dash::DashDot => &[10.0, 4.0, 2.0, 4.0],
+            Dash::Alternating => &[10.0, 4.0, 2.0, 4.0],
         }
     }
 }
@@ -137,7 +137,7 @@ pub fn series(index: usize) -> Series {
         look(NAVY, Hatch::Plain, Dash::Solid, Mark::Circle),
         look(CORAL, Hatch::Rising, Dash::Long, Mark::Square),
         look(TEAL, Hatch::Falling, Dash::Short, Mark::Triangle),
-        look(AZURE, Hatch::Level, Dash::DashDot, Mark::Diamond),
+        look(AZURE, Hatch::Level, Dash::Alternating, Mark::Diamond),
         look(BROWN, Hatch::Crossed, Dash::Dotted, Mark::Ring),
         look(MINT, Hatch::Upright, Dash::Solid, Mark::Frame),
         look(OCHRE, Hatch::Rising, Dash::Long, Mark::Delta),

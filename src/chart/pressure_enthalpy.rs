@@ -2,10 +2,11 @@
 
 use super::font::{self, Weight};
 use super::frame::{Axis, Frame, around};
-use super::geometry;
+use super::geometry::{self, Rect};
+use super::label::{Anchor, BODY, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{Dash, INK, NAVY, TEAL, WHITE};
-use super::scene::{Anchor, BODY, MARGIN, Rect, SMALL, Scene, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite};
 
 const PICTURE: &str = "pressure–enthalpy diagram";
@@ -214,7 +215,7 @@ fn draw_cycle(scene: &mut Scene, frame: &Frame, data: &PressureEnthalpy) {
         let mut places = vec![((x + side, y + lift), anchor)];
         places.extend(around(x, y, 10.0));
         let sign = font::fit(&state.point, set.size, set.weight, 60.0);
-        scene.place(&sign, &places, set);
+        scene.place(&frame.area, &sign, &places, set);
     }
 }
 
@@ -242,13 +243,13 @@ fn label_phases(
     let places: Vec<_> = [-10.0, 22.0, -24.0, 36.0]
         .map(|dy| ((x, y + dy), Anchor::Middle))
         .into();
-    scene.place(&condensing, &places, set);
+    scene.place(&frame.area, &condensing, &places, set);
     let evaporating = format!("evaporating {}", temperature(data.evaporating_c));
     let (x, y) = level(f64::min, f64::INFINITY);
     let places: Vec<_> = [22.0, -10.0, 36.0, -24.0]
         .map(|dy| ((x, y + dy), Anchor::Middle))
         .into();
-    scene.place(&evaporating, &places, set);
+    scene.place(&frame.area, &evaporating, &places, set);
 
     // Names of the regions, where the dome leaves room for them.
     let Some(top) = data.dome.iter().copied().max_by(|a, b| a.1.total_cmp(&b.1)) else {

@@ -2,9 +2,10 @@
 
 use super::font::{self, Weight};
 use super::frame::Axis;
+use super::label::{Anchor, BODY, SMALL, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{AXIS, Dash, GRID, INK, MUTED, NAVY, WHITE};
-use super::scene::{Anchor, BODY, MARGIN, SMALL, Scene, Type, WIDTH};
+use super::scene::{MARGIN, Scene, WIDTH};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "swings";

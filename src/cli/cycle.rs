@@ -2,14 +2,13 @@
 
 use std::path::{Path, PathBuf};
 
-use comfy_table::{CellAlignment, Table, presets};
-
 use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
 use crate::answer::cycle::CycleAnswer;
 use crate::chart::{ChartError, Marks, PressureEnthalpy, StatePoint, pressure_enthalpy};
 use crate::heatpump::cycle::{Cycle, CycleInputs, Diagram, DiagramPoint};
 use crate::problem::{Place, Problem, Problems, Severity};
 use crate::refrigerant::{Equation, Refrigerant, UnknownRefrigerant};
+use crate::report::plain_table;
 
 /// Solve one refrigerant cycle and print its state points.
 #[derive(Debug, clap::Args)]
@@ -220,18 +219,6 @@ fn text(cycle: &Cycle) -> String {
 }
 
 /// A table without lines, its figures to the right.
-fn plain_table(header: Vec<&str>, rows: Vec<Vec<String>>) -> String {
-    let mut table = Table::new();
-    table
-        .load_style(presets::NOTHING)
-        .set_header(header)
-        .add_rows(rows);
-    for column in table.column_iter_mut().skip(1) {
-        column.set_cell_alignment(CellAlignment::Right);
-    }
-    table.trim_fmt()
-}
-
 fn state_table(cycle: &Cycle) -> String {
     let mut rows = Vec::new();
     for ((name, state), number) in cycle.points().into_iter().zip(1..) {

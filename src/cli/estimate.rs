@@ -30,6 +30,9 @@ pub struct Args {
     /// How to print the result.
     #[arg(long, value_enum, default_value_t)]
     format: Format,
+    /// Say where each assumption is from.
+    #[arg(long)]
+    assumptions: bool,
     /// Print every default with its source, and stop.
     #[arg(long)]
     show_defaults: bool,
@@ -54,8 +57,10 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     let mut ledgers = Vec::new();
     let mut outcomes = Vec::with_capacity(brief.case.contenders.len());
     for contender in &brief.case.contenders {
-        let mut ledger =
-            args.out.as_ref().map(|_| Ledger::with_capacity(brief.case.site.outdoor_c.len()));
+        let mut ledger = args
+            .out
+            .as_ref()
+            .map(|_| Ledger::with_capacity(brief.case.site.outdoor_c.len()));
         outcomes.push(brief.case.run_one(contender, ledger.as_mut())?);
         ledgers.extend(ledger);
     }
@@ -63,20 +68,24 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     if let Some(folder) = &args.out {
         let mut files = pictures(&estimate, folder)?;
         for (i, (contender, ledger)) in brief.case.contenders.iter().zip(&ledgers).enumerate() {
-            let name = format!("ledger-{}-{}.csv", i + 1, file_name(&contender.system.label));
+            let name = format!(
+                "ledger-{}-{}.csv",
+                i + 1,
+                file_name(&contender.system.label)
+            );
             let content = ledger_csv(ledger, &brief.case.site.axis, brief.case.time_zone)
                 .map_err(|error| cannot_write(folder, &error))?;
             files.push(NewFile::new(folder.join(name), content));
         }
-        let json = serde_json::to_vec_pretty(&estimate)
-            .map_err(|error| cannot_write(folder, &error))?;
+        let json =
+            serde_json::to_vec_pretty(&estimate).map_err(|error| cannot_write(folder, &error))?;
         files.push(NewFile::new(folder.join("result.json"), json));
         write_files(&files, args.force)?;
     }
     warn(&estimate.findings);
     match args.format {
         Format::Json => print_json(&estimate),
-        Format::Text => print(&estimate_text(&estimate)),
+        Format::Text => print(&estimate_text(&estimate, args.assumptions)),
     }
 }
 
@@ -91,14 +100,18 @@ fn pictures(estimate: &Estimate, folder: &std::path::Path) -> Result<Vec<NewFile
                 today: system.today,
                 energy: system.cost_energy,
                 standing: system.cost_standing,
-                tax: system.cost_tax,
+                tax: system.cost_tax.unwrap_or(0.0),
             })
             .collect(),
     };
     let picture =
         annual_cost(&data, &Marks::default()).map_err(|error| cannot_write(folder, &error))?;
-    let png = picture.png().map_err(|error| cannot_write(folder, &error))?;
-    let svg = picture.svg().map_err(|error| cannot_write(folder, &error))?;
+    let png = picture
+        .png()
+        .map_err(|error| cannot_write(folder, &error))?;
+    let svg = picture
+        .svg()
+        .map_err(|error| cannot_write(folder, &error))?;
     Ok(vec![
         NewFile::new(folder.join("annual-cost.svg"), svg),
         NewFile::new(folder.join("annual-cost.png"), png),
@@ -106,7 +119,10 @@ fn pictures(estimate: &Estimate, folder: &std::path::Path) -> Result<Vec<NewFile
 }
 
 fn cannot_write(folder: &std::path::Path, error: &dyn std::fmt::Display) -> Failure {
-    Failure::Write { path: folder.to_owned(), reason: error.to_string() }
+    Failure::Write {
+        path: folder.to_owned(),
+        reason: error.to_string(),
+    }
 }
 
 /// A label as a file name: lower-case letters and digits, everything else one hyphen.
@@ -122,5 +138,9 @@ fn file_name(label: &str) -> String {
         }
     }
     let name: String = name.trim_end_matches('-').chars().take(LONGEST).collect();
-    if name.is_empty() { "system".to_owned() } else { name }
+    if name.is_empty() {
+        "system".to_owned()
+    } else {
+        name
+    }
 }

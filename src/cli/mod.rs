@@ -6,10 +6,13 @@
 
 mod cycle;
 mod estimate;
+mod explain;
 mod failure;
 mod files;
 mod ground;
+mod machine;
 mod output;
+mod rating;
 mod tariff;
 
 use std::process::ExitCode;
@@ -36,7 +39,10 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Estimate(estimate::Args),
+    Explain(explain::Args),
     Cycle(cycle::Args),
+    Machine(machine::Args),
+    Rating(rating::Args),
     Tariff(tariff::Args),
     Ground(ground::Args),
 }
@@ -53,7 +59,10 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
+        Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
+        Command::Machine(args) => machine::run(args),
+        Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
         Command::Ground(args) => ground::run(args),
     }

@@ -139,7 +139,11 @@ fn load(args: &Args, tariff: &Tariff, zone: Option<Tz>, clock: Tz) -> Result<Loa
     };
     let kwh = args.kwh.unwrap_or(usual);
     if !(0.0..=1e9).contains(&kwh) {
-        return Err(Failure::argument("--kwh", kwh.to_string(), "an amount from 0 to 1e9 kWh"));
+        return Err(Failure::argument(
+            "--kwh",
+            kwh.to_string(),
+            "an amount from 0 to 1e9 kWh",
+        ));
     }
     Ok(Load {
         civil: axis.civil(clock),
@@ -151,12 +155,16 @@ fn load(args: &Args, tariff: &Tariff, zone: Option<Tz>, clock: Tz) -> Result<Loa
 /// The year of the tariff's hourly prices, or of its dates.
 fn example_year(tariff: &Tariff) -> i32 {
     let first = tariff.prices.first();
-    let hourly = first.and_then(|prices| prices.hourly.as_ref()).map(|hourly| {
-        // The middle: a year that begins in another zone begins in the year before.
-        let series = &hourly.per_kwh;
-        (series.start() + (series.end() - series.start()) / 2).year()
-    });
-    let dated = first.and_then(|prices| prices.valid_from).map(|date| date.year());
+    let hourly = first
+        .and_then(|prices| prices.hourly.as_ref())
+        .map(|hourly| {
+            // The middle: a year that begins in another zone begins in the year before.
+            let series = &hourly.per_kwh;
+            (series.start() + (series.end() - series.start()) / 2).year()
+        });
+    let dated = first
+        .and_then(|prices| prices.valid_from)
+        .map(|date| date.year());
     hourly.or(dated).unwrap_or(YEAR)
 }
 
@@ -168,9 +176,7 @@ fn text(tariff: &Tariff, clock: Tz, load: &Load, bill: &Bill) -> String {
     };
     let mut parts = vec![format!(
         "{}: {} in {}, clock of {clock} ({whose})",
-        tariff.label,
-        tariff.fuel,
-        tariff.currency
+        tariff.label, tariff.fuel, tariff.currency
     )];
     for prices in &tariff.prices {
         parts.push(String::new());
@@ -231,7 +237,12 @@ fn price_list(prices: &Prices, currency: Currency) -> Vec<String> {
             hourly.per_kwh.covers()
         ));
     }
-    lines.extend(prices.steps.as_ref().map(|steps| steps_table(steps, currency)));
+    lines.extend(
+        prices
+            .steps
+            .as_ref()
+            .map(|steps| steps_table(steps, currency)),
+    );
     if !prices.bands.is_empty() {
         lines.push(clock_table(&prices.bands, currency));
     }
@@ -258,7 +269,7 @@ fn tax(prices: &Prices) -> String {
             let names: Vec<_> = [
                 (covers.energy, "energy"),
                 (covers.standing, "standing charge"),
-                (covers.demand, "demand charge"),
+                (covers.demand && prices.demand.is_some(), "demand charge"),
             ]
             .iter()
             .filter(|(covered, _)| *covered)
@@ -305,7 +316,9 @@ fn clock_table(bands: &[Band], currency: Currency) -> String {
     for day in clock_days(&whens) {
         let mut days = day.days.as_str();
         for &(from, to, band) in &day.stretches {
-            let Some(band) = bands.get(band) else { continue };
+            let Some(band) = bands.get(band) else {
+                continue;
+            };
             table.add_row([
                 days,
                 &clock(from),
@@ -322,21 +335,34 @@ fn clock_table(bands: &[Band], currency: Currency) -> String {
 
 fn bill_table(bill: &Bill) -> String {
     let mut table = plain_table(&["bill", "what", "quantity", "", "rate", bill.currency.code()]);
-    let mut before = None;
-    for line in &bill.lines {
-        let period = line.period.to_string();
-        let shown = if before == Some(line.period) { "" } else { &period };
-        before = Some(line.period);
+    let bills: Vec<_> = bill.lines.chunk_by(|a, b| a.period == b.period).collect();
+    for lines in &bills {
+        let mut period = lines
+            .first()
+            .map_or(String::new(), |line| line.period.to_string());
+        for line in *lines {
+            table.add_row([
+                &std::mem::take(&mut period),
+                &line.what,
+                &line.quantity.round_dp(2).to_string(),
+                &line.unit,
+                &rate(line, bill.currency),
+                &line.amount.to_string(),
+            ]);
+        }
+        let sum = lines.iter().map(|line| line.amount).sum();
         table.add_row([
-            shown,
-            &line.what,
-            &format!("{}", line.quantity.round_dp(2)),
-            &line.unit,
-            &rate(line, bill.currency),
-            &line.amount.to_string(),
+            "",
+            "to pay",
+            "",
+            "",
+            "",
+            &bill.currency.round(sum).to_string(),
         ]);
     }
-    table.add_row(["", "to pay", "", "", "", &bill.total().to_string()]);
+    if bills.len() > 1 {
+        table.add_row(["all", "to pay", "", "", "", &bill.total().to_string()]);
+    }
     align_right(&mut table, &[2, 4, 5]);
     table.to_string()
 }

@@ -85,7 +85,14 @@ impl Check {
     fn number_within<T>(&mut self, leaf: &Option<Leaf<T>>, number: f64, bound: &Bound) -> bool {
         let holds = bound.holds(number);
         if let (false, Some(leaf)) = (holds, leaf) {
-            let found = format!("{} {}", tidy(number), bound.unit);
+            let written = leaf.written().trim_start_matches("the bare number ");
+            let canonical = format!("{} {}", tidy(number), bound.unit);
+            let said = written.trim_matches('"').trim() == canonical.trim();
+            let found = if said {
+                written.to_owned()
+            } else {
+                format!("{written}, which is {canonical}")
+            };
             self.refuse(
                 &leaf.span(),
                 found.trim_end(),
@@ -104,6 +111,17 @@ impl Check {
             format!("{field} is missing"),
             "",
             format!("write for example {field} = {example}"),
+        ));
+    }
+
+    /// Says that a whole table is missing from the document.
+    pub fn missing_table(&mut self, header: &str, content: &str) {
+        let place = Place::file(self.source.file().clone());
+        self.problems.push(Problem::new(
+            place,
+            format!("the table {header} is missing"),
+            "",
+            format!("write {header} and under it {content}"),
         ));
     }
 

@@ -25,10 +25,16 @@ pub trait LeafValue: Sized {
 #[derive(Debug, Clone)]
 pub struct Leaf<T> {
     value: Result<T, UnitProblem>,
+    written: String,
     span: Range<usize>,
 }
 
 impl<T> Leaf<T> {
+    /// What stands in the document, in words.
+    pub fn written(&self) -> &str {
+        &self.written
+    }
+
     /// The value, or what is wrong with it.
     pub fn value(&self) -> Result<&T, &UnitProblem> {
         self.value.as_ref()
@@ -43,8 +49,10 @@ impl<T> Leaf<T> {
 impl<'de, T: LeafValue> Deserialize<'de> for Leaf<T> {
     fn deserialize<D: Deserializer<'de>>(deserializer: D) -> Result<Self, D::Error> {
         let spanned = Spanned::<Value>::deserialize(deserializer)?;
+        let value = spanned.get_ref();
         Ok(Self {
-            value: T::read(spanned.get_ref()),
+            value: T::read(value),
+            written: describe(value),
             span: spanned.span(),
         })
     }

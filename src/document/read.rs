@@ -97,14 +97,27 @@ fn syntax(error: &Error, source: &Source) -> Problem {
     )
 }
 
+/// A value where a table is expected or the reverse; the library names our own structs, which mean nothing to a reader.
 fn structure(error: &Error, source: &Source) -> Problem {
     let place = error
         .span()
         .map_or_else(|| Place::file(source.file.clone()), |s| source.place(&s));
+    let message = error.message();
+    let (found, allowed) = match message
+        .strip_prefix("invalid type: ")
+        .and_then(|m| m.split_once(", expected "))
+    {
+        Some((found, expected)) if expected.starts_with("struct") => (found, "a table"),
+        Some((found, expected)) if expected.starts_with("a sequence") => {
+            (found, "a list, or tables under [[…]]")
+        }
+        Some((found, expected)) => (found, expected),
+        None => (message, ""),
+    };
     Problem::new(
         place,
-        error.message(),
-        "",
+        found,
+        allowed,
         "a table is written under its [header], a repeated one under [[header]]",
     )
 }

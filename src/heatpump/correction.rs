@@ -11,7 +11,7 @@ use super::sheet::{SpeedAt, TestedPoint};
 /// Largest correction, relative.
 pub const GREATEST_CORRECTION: f64 = 0.10;
 /// Distances over which residuals are alike: source K, flow K, output as a share of the nominal.
-const REACH: [f64; 3] = [15.0, 18.0, 0.6];
+const REACH: [f64; 3] = [12.0, 15.0, 0.4];
 /// Standard deviation of a residual itself and of the noise in it: the ratio decides how closely points are honoured.
 const SIGNAL: f64 = 0.04;
 const NOISE: f64 = 0.001;

@@ -22,7 +22,7 @@ const COP_WIDTH: f64 = 0.025;
 const OUTPUT_WIDTH: f64 = 0.025;
 const LEAST_OUTPUT_WIDTH: f64 = 0.05;
 /// Speed, as a share of the greatest, at which a point of unknown speed is believed to be, and its standard deviation.
-const UNKNOWN_SPEED: (f64, f64) = (0.9, 0.2);
+const UNKNOWN_SPEED: (f64, f64) = (1.0, 0.2);
 /// Residual of a point at which the trial machine cannot run, in standard deviations: large, but not infinite, so that the search
 /// turns back.
 const CANNOT_RUN: f64 = 50.0;
@@ -287,8 +287,14 @@ fn residuals(machine: &Machine, frost: &Frost, point: &TestedPoint) -> [f64; RES
                 + output(model.least_kw, LEAST_OUTPUT_WIDTH).max(0.0)
         }
         SpeedAt::Unknown => {
-            let share = point.heat_kw / model.greatest_kw;
-            (share / UNKNOWN_SPEED.0).ln() / UNKNOWN_SPEED.1
+            let share = point.heat_kw / model.greatest_kw / UNKNOWN_SPEED.0;
+            // Slower than the greatest is quite possible, faster is not.
+            let width = if share > 1.0 {
+                OUTPUT_WIDTH
+            } else {
+                UNKNOWN_SPEED.1
+            };
+            share.ln() / width
         }
     };
     [cop, second]

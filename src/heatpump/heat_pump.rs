@@ -3,7 +3,7 @@
 use std::sync::Arc;
 
 use super::correction::FittedMachine;
-use super::deliver::{ColdSide, Duty};
+use super::duty::{ColdSide, Duty};
 use super::frost::Frost;
 use super::idle::IdlePower;
 use super::limits::Limits;
@@ -110,7 +110,10 @@ impl HeatPump {
     /// The same machine with a source pump that overcomes the machine alone, as in its tested points: for a loop whose own pump
     /// is accounted for elsewhere.
     pub fn without_outside_pump(&self) -> Self {
-        Self { source_side_factor: 1.0, ..self.clone() }
+        Self {
+            source_side_factor: 1.0,
+            ..self.clone()
+        }
     }
 
     /// What it is called.
@@ -148,9 +151,19 @@ impl HeatPump {
         /// Flow minus return of the standard rating, EN 14511, K.
         const SPREAD_K: f64 = 5.0;
         let (open_c, flow_c) = self.core.rated_condition;
-        let cold = ColdSide { open_c, k_per_kw: 0.0, relative_humidity: None };
+        let cold = ColdSide {
+            open_c,
+            k_per_kw: 0.0,
+            relative_humidity: None,
+        };
         let heat_kw = self.rated_output_kw();
-        let duty = Duty { heat_kw, flow_c, spread_k: SPREAD_K, hours: 1.0, at_full_output: true };
+        let duty = Duty {
+            heat_kw,
+            flow_c,
+            spread_k: SPREAD_K,
+            hours: 1.0,
+            at_full_output: true,
+        };
         self.deliver(&cold, &duty).extracted_kwh
     }
 

@@ -99,9 +99,18 @@ impl Emitters {
     pub fn with_design_flow(&self, flow_c: f64, room_c: f64) -> Self {
         /// Return water stays at least this much above the room, K.
         const LEAST_EXCESS_K: f64 = 1.0;
-        let return_c = (flow_c - self.design_spread_k).max(room_c + LEAST_EXCESS_K).min(flow_c);
+        let return_c = (flow_c - self.design_spread_k)
+            .max(room_c + LEAST_EXCESS_K)
+            .min(flow_c);
         let greatest_flow_c = flow_c + (self.greatest_flow_c - self.design_flow_c);
-        Self::new(self.kind, self.design_load_kw, flow_c, return_c, room_c, greatest_flow_c)
+        Self::new(
+            self.kind,
+            self.design_load_kw,
+            flow_c,
+            return_c,
+            room_c,
+            greatest_flow_c,
+        )
     }
 
     /// Flow temperature that is never exceeded, °C.
@@ -147,6 +156,11 @@ impl Emitters {
     /// Greatest heat at the greatest permitted flow temperature into a room at its design temperature, kW.
     pub fn greatest_output_kw(&self) -> f64 {
         self.greatest_output_kw
+    }
+
+    /// Mean water minus room temperature at the design load, K.
+    pub fn design_excess_k(&self) -> f64 {
+        self.design_excess_k
     }
 
     /// Flow minus return at the design load, K.

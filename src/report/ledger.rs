@@ -6,8 +6,9 @@ use chrono_tz::Tz;
 use crate::calendar::HourAxis;
 use crate::year::{COLUMNS, Ledger};
 
-/// Digits after the point: a tenth of a watt-hour and of a millikelvin, far below what any figure means.
-const DIGITS: usize = 4;
+/// Digits after the point: far below what any figure means, but thousands of hours at rest are alike, and what rounding takes
+/// from one it takes from all.
+const DIGITS: usize = 6;
 
 /// The ledger of one system as CSV. Missing is blank; times are the beginning of the hour.
 ///
@@ -16,7 +17,12 @@ const DIGITS: usize = 4;
 pub fn ledger_csv(ledger: &Ledger, axis: &HourAxis, zone: Tz) -> Result<Vec<u8>, csv::Error> {
     let mut writer = csv::Writer::from_writer(Vec::with_capacity(ledger.rows.len() * 256));
     let names = COLUMNS.iter().map(|column| column.name);
-    writer.write_record(["time_utc", "time_local"].into_iter().chain(names).chain(["flags"]))?;
+    writer.write_record(
+        ["time_utc", "time_local"]
+            .into_iter()
+            .chain(names)
+            .chain(["flags"]),
+    )?;
     let mut field = String::new();
     for (i, row) in ledger.rows.iter().enumerate() {
         let utc = axis.at(ledger.first_hour + i);
@@ -36,7 +42,9 @@ pub fn ledger_csv(ledger: &Ledger, axis: &HourAxis, zone: Tz) -> Result<Vec<u8>,
         writer.write_field(row.flags.words())?;
         writer.write_record(None::<&[u8]>)?;
     }
-    writer.into_inner().map_err(|error| csv::Error::from(error.into_error()))
+    writer
+        .into_inner()
+        .map_err(|error| csv::Error::from(error.into_error()))
 }
 
 /// Takes away trailing zeros and a minus before nothing.
@@ -50,7 +58,11 @@ fn shorten(field: &mut String) {
 
 /// The columns of the ledger and what they mean, one a line.
 pub fn ledger_legend() -> String {
-    let width = COLUMNS.iter().map(|column| column.name.len()).max().unwrap_or(0);
+    let width = COLUMNS
+        .iter()
+        .map(|column| column.name.len())
+        .max()
+        .unwrap_or(0);
     COLUMNS
         .iter()
         .map(|column| format!("{:width$}  {}\n", column.name, column.meaning))
@@ -66,8 +78,19 @@ mod tests {
     #[test]
     fn missing_is_blank_and_numbers_are_short() {
         let mut ledger = Ledger::default();
-        ledger.take(0, &Row { outdoor_c: -3.5, fuel_price: None, gains_kwh: 0.25, ..Row::default() });
-        let axis = HourAxis { start: Utc.with_ymd_and_hms(2023, 6, 1, 0, 0, 0).unwrap(), hours: 1 };
+        ledger.take(
+            0,
+            &Row {
+                outdoor_c: -3.5,
+                fuel_price: None,
+                gains_kwh: 0.25,
+                ..Row::default()
+            },
+        );
+        let axis = HourAxis {
+            start: Utc.with_ymd_and_hms(2023, 6, 1, 0, 0, 0).unwrap(),
+            hours: 1,
+        };
         let bytes = ledger_csv(&ledger, &axis, "Europe/London".parse().unwrap()).unwrap();
         let mut reader = csv::Reader::from_reader(bytes.as_slice());
         let header = reader.headers().unwrap().clone();

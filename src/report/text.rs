@@ -2,61 +2,61 @@
 
 use std::fmt::Write as _;
 
-use comfy_table::{CellAlignment, ContentArrangement, Table, presets};
+use super::table::plain_table_within;
+use crate::answer::{Estimate, LeverAnswer, SystemAnswer};
 
-use crate::answer::{Estimate, SystemAnswer};
+/// Width of everything that is printed, characters.
+const WIDTH: u16 = 80;
+/// Systems beside each other, today's among them.
+const SYSTEMS_ABREAST: usize = 4;
 
-/// Columns of systems that fit beside the names of the figures on 80 columns.
-const SYSTEMS_ABREAST: usize = 3;
-
-/// Width of a column of figures.
-const FIGURE_WIDTH: u16 = 15;
-
-/// The estimate as text for a terminal of 80 columns or more.
-pub fn estimate_text(estimate: &Estimate) -> String {
-    let mut text = String::new();
-    // Writing to a String cannot fail.
-    let _ = writeln!(text, "{}", heading(estimate));
-    let (today, choices): (Vec<_>, Vec<_>) = estimate.systems.iter().partition(|system| system.today);
-    let abreast = SYSTEMS_ABREAST.saturating_sub(today.len()).max(1);
-    for group in choices.chunks(abreast) {
+/// The estimate as text for a terminal of 80 columns or more; `sources` says where each assumption is from.
+pub fn estimate_text(estimate: &Estimate, sources: bool) -> String {
+    let mut text = heading(estimate);
+    let (today, choices): (Vec<_>, Vec<_>) =
+        estimate.systems.iter().partition(|system| system.today);
+    for group in choices.chunks(SYSTEMS_ABREAST - 1) {
         let systems: Vec<_> = today.iter().chain(group).copied().collect();
+        // Writing to a String cannot fail.
         let _ = writeln!(text, "{}\n", table(&systems, &estimate.currency));
     }
-    let _ = writeln!(text, "What would change it");
-    for answers in estimate.break_even.values() {
-        for answer in answers {
-            let _ = writeln!(text, "  {}", answer.sentence);
-        }
+    for choice in &choices {
+        let levers = estimate
+            .break_even
+            .get(&choice.label)
+            .map_or(&[][..], Vec::as_slice);
+        let _ = writeln!(
+            text,
+            "{}",
+            wrapped(&in_words(choice, levers, &estimate.currency), "", "  ")
+        );
     }
-    let _ = writeln!(text, "\nWhat was assumed");
-    for assumption in &estimate.assumptions {
-        let _ = writeln!(text, "  {} = {} ({})", assumption.name, assumption.value, assumption.from);
-    }
-    let _ = writeln!(text, "\n{LIMITS}");
+    let _ = writeln!(text, "\n{}", assumptions(estimate, sources));
+    let _ = write!(text, "\n{}", wrapped(LIMITS, "", ""));
     text
 }
 
 /// What the figures are and are not.
-const LIMITS: &str = "Estimates for a decision, not a design. Before anything is ordered: a room-by-room heat-loss
-calculation by a competent person, the electricity supply checked with the network
-operator and an electrician, refrigerant and gas work by licensed people, local rules
-on noise, siting and ground works.";
+const LIMITS: &str = "Estimates for a decision, not a design. Before anything is ordered: a room-by-room heat-loss \
+calculation by a competent person; the electricity supply checked with the network operator and an electrician; \
+refrigerant, gas and ground works by licensed people under local rules.";
 
 fn heading(estimate: &Estimate) -> String {
     let home = &estimate.home;
     let weather = &estimate.weather;
     let label = home.label.as_deref().unwrap_or("The home");
-    let repaired = if weather.repaired_hours > 0 {
-        format!(", {} h repaired", weather.repaired_hours)
-    } else {
-        String::new()
+    let repaired = match weather.repaired_hours {
+        0 => String::new(),
+        hours => format!(", {hours} h repaired"),
     };
-    let years = if weather.years > 1 { format!(", mean of {} years", weather.years) } else { String::new() };
+    let years = match weather.years {
+        0 | 1 => String::new(),
+        years => format!(", mean of {years} years"),
+    };
     format!(
         "{label}: heating and hot water in a year{years}\n\
-         Home     {:.0} W/K, {:.1} kW at {:.1} °C outdoors, gains not counted\n\
-         Weather  {}: {} h, mean {:.1} °C, lowest {:.1} °C{repaired}\n",
+         Home     {:.0} W/K, {:.1} kW at {:.1} °C outdoors without gains\n\
+         Weather  {}: {} h, mean {:.1} °C, lowest {:.1} °C{repaired}\n\n",
         home.heat_loss_w_per_k,
         home.design_heat_load_kw,
         home.design_outdoor_c,
@@ -71,55 +71,159 @@ fn heading(estimate: &Estimate) -> String {
 type Line = (&'static str, fn(&SystemAnswer) -> Option<String>);
 
 const LINES: &[Line] = &[
-    ("Cost", |s| Some(format!("{:.2}", s.cost))),
-    ("  energy", |s| Some(format!("{:.2}", s.cost_energy))),
-    ("  standing charges", |s| Some(format!("{:.2}", s.cost_standing))),
-    ("  tax", |s| Some(format!("{:.2}", s.cost_tax))),
-    ("Saving against today", |s| s.saving.map(|saving| format!("{saving:+.2}"))),
+    ("Cost of the year", |s| Some(format!("{:.0}", s.cost))),
+    ("  energy", |s| Some(format!("{:.0}", s.cost_energy))),
+    ("  standing charges", |s| {
+        Some(format!("{:.0}", s.cost_standing))
+    }),
+    ("  tax", |s| s.cost_tax.map(|tax| format!("{tax:.0}"))),
+    ("Saving against today", |s| {
+        s.saving.map(|saving| format!("{saving:+.0}"))
+    }),
     ("Carbon, kg CO2e", |s| Some(format!("{:.0}", s.carbon_kg))),
-    ("Heat to rooms, kWh", |s| Some(format!("{:.0}", s.space_heat_kwh))),
-    ("Heat to hot water, kWh", |s| Some(format!("{:.0}", s.hot_water_kwh))),
-    ("Electricity, kWh", |s| Some(format!("{:.0}", s.electricity_kwh))),
-    ("  backup and immersion", |s| s.backup_kwh.map(|kwh| format!("{kwh:.0}"))),
-    ("Gas, gross kWh", |s| s.fuel_kwh.map(|kwh| format!("{kwh:.0}"))),
-    ("SPF with auxiliaries, H4", |s| s.spf_h4.map(|spf| format!("{spf:.2}"))),
-    ("  machine alone, H1", |s| s.spf_h1.map(|spf| format!("{spf:.2}"))),
-    ("Efficiency, gross", |s| s.seasonal_efficiency.map(|e| format!("{:.0} %", e * 100.0))),
+    ("Heat to rooms, kWh", |s| {
+        Some(format!("{:.0}", s.space_heat_kwh))
+    }),
+    ("Heat to hot water, kWh", |s| {
+        Some(format!("{:.0}", s.hot_water_kwh))
+    }),
+    ("Gas, gross kWh", |s| {
+        s.fuel_kwh.map(|kwh| format!("{kwh:.0}"))
+    }),
+    ("  efficiency, gross", |s| {
+        s.seasonal_efficiency.map(|e| format!("{:.0} %", e * 100.0))
+    }),
+    ("Electricity, kWh", |s| {
+        Some(format!("{:.0}", s.electricity_kwh))
+    }),
+    ("  backup, immersion", |s| {
+        s.backup_kwh.map(|kwh| format!("{kwh:.0}"))
+    }),
+    ("  highest hour, kW", |s| {
+        Some(format!("{:.1}", s.peak_electric_kw))
+    }),
+    ("SPF, machine (H1)", |s| {
+        s.spf_h1.map(|spf| format!("{spf:.2}"))
+    }),
+    ("  all auxiliaries (H4)", |s| {
+        s.spf_h4.map(|spf| format!("{spf:.2}"))
+    }),
     ("Balance point", |s| s.balance_point.clone()),
-    ("  with hot water", |s| s.balance_point_with_hot_water_c.map(|c| format!("{c:.1} °C"))),
-    ("Year of the loop's life shown", |s| s.ground.as_ref().map(|g| g.shown_year.to_string())),
-    ("  cost in its year 1", |s| s.ground.as_ref().map(|g| format!("{:.2}", g.first_year_cost))),
-    ("  SPF H4 in its year 1", |s| s.ground.as_ref()?.first_year_spf_h4.map(|spf| format!("{spf:.2}"))),
-    ("Lowest brine", |s| s.ground.as_ref()?.lowest_brine_c.map(|c| format!("{c:.1} °C"))),
-    ("  in year 1", |s| s.ground.as_ref()?.first_year_lowest_brine_c.map(|c| format!("{c:.1} °C"))),
-    ("Hours the machine stood", |s| s.ground.as_ref().map(|g| format!("{:.0}", g.hours_stopped))),
-    ("Hours with backup", |s| s.backup_kwh.map(|_| format!("{:.0}", s.hours_backup))),
-    ("Hours short of heat", |s| Some(format!("{:.0}", s.hours_short))),
-    ("Coldest indoors", |s| Some(format!("{:.1} °C", s.min_indoor_c))),
-    ("Highest hour, electric kW", |s| Some(format!("{:.1}", s.peak_electric_kw))),
+    ("  with hot water", |s| {
+        s.balance_point_with_hot_water_c
+            .map(|c| format!("{c:.1} °C"))
+    }),
+    ("Year of the loop shown", |s| {
+        s.ground.as_ref().map(|g| g.shown_year.to_string())
+    }),
+    ("  cost in its year 1", |s| {
+        s.ground
+            .as_ref()
+            .map(|g| format!("{:.0}", g.first_year_cost))
+    }),
+    ("  SPF H4 in year 1", |s| {
+        let spf = s.ground.as_ref()?.first_year_spf_h4?;
+        Some(format!("{spf:.2}"))
+    }),
+    ("  lowest brine", |s| {
+        let c = s.ground.as_ref()?.lowest_brine_c?;
+        Some(format!("{c:.1} °C"))
+    }),
+    ("  lowest in year 1", |s| {
+        let c = s.ground.as_ref()?.first_year_lowest_brine_c?;
+        Some(format!("{c:.1} °C"))
+    }),
+    ("  machine stood, h", |s| {
+        s.ground.as_ref().map(|g| format!("{:.0}", g.hours_stopped))
+    }),
+    ("Hours with backup", |s| {
+        s.backup_kwh.map(|_| format!("{:.0}", s.hours_backup))
+    }),
+    ("Hours short of heat", |s| {
+        Some(format!("{:.0}", s.hours_short))
+    }),
+    ("Coldest indoors", |s| {
+        Some(format!("{:.1} °C", s.min_indoor_c))
+    }),
 ];
 
-fn table(systems: &[&SystemAnswer], currency: &str) -> Table {
-    let mut table = Table::new();
-    table.load_style(presets::UTF8_HORIZONTAL_ONLY);
-    table.set_content_arrangement(ContentArrangement::Dynamic).set_width(80);
+fn table(systems: &[&SystemAnswer], currency: &str) -> String {
     let names = systems.iter().map(|system| {
-        if system.today { format!("{} (today)", system.label) } else { system.label.clone() }
-    });
-    table.set_header(std::iter::once(format!("{currency} a year")).chain(names));
-    for (name, figure) in LINES {
-        let figures: Vec<_> = systems.iter().map(|system| figure(system)).collect();
-        if figures.iter().all(Option::is_none) {
-            continue;
+        if system.today {
+            format!("{} (today)", system.label)
+        } else {
+            system.label.clone()
         }
-        let cells = figures.into_iter().map(|figure| figure.unwrap_or_else(|| "–".to_owned()));
-        table.add_row(std::iter::once((*name).to_owned()).chain(cells));
+    });
+    let rows = LINES.iter().filter_map(|(name, figure)| {
+        let figures: Vec<_> = systems.iter().map(|system| figure(system)).collect();
+        let known = figures.iter().any(Option::is_some);
+        let cells = figures
+            .into_iter()
+            .map(|figure| figure.unwrap_or_else(|| "–".to_owned()));
+        known.then(|| std::iter::once((*name).to_owned()).chain(cells).collect())
+    });
+    plain_table_within(
+        WIDTH,
+        std::iter::once(currency.to_owned()).chain(names),
+        rows,
+    )
+}
+
+/// A choice's answer as an adviser could say it.
+fn in_words(choice: &SystemAnswer, levers: &[LeverAnswer], currency: &str) -> String {
+    let saving = choice.saving.unwrap_or(0.0);
+    /// Below this share of today's cost a difference is told as none. A choice of ours.
+    const ABOUT_THE_SAME: f64 = 0.02;
+    let difference = if saving.abs() < ABOUT_THE_SAME * (choice.cost + saving).abs() {
+        "about the same as today".to_owned()
+    } else if saving > 0.0 {
+        format!("about {saving:.0} {currency} a year less than today")
+    } else {
+        format!("about {:.0} {currency} a year more than today", -saving)
+    };
+    let conditions: Vec<_> = levers
+        .iter()
+        .flat_map(|lever| lever.conditions.iter().cloned())
+        .collect();
+    let break_even = match conditions.split_last() {
+        None => "No price or flow temperature looked at makes it break even.".to_owned(),
+        Some((only, [])) => format!("It breaks even with {only}."),
+        Some((last, rest)) => format!("It breaks even with {}, or {last}.", rest.join(", ")),
+    };
+    format!("{}: {difference}. {break_even}", choice.label)
+}
+
+fn assumptions(estimate: &Estimate, sources: bool) -> String {
+    if sources {
+        let lines: Vec<_> = estimate
+            .assumptions
+            .iter()
+            .map(|a| {
+                wrapped(
+                    &format!("{}: {} ({})", a.name, a.value, a.from),
+                    "  ",
+                    "    ",
+                )
+            })
+            .collect();
+        return format!("Assumed\n{}", lines.join("\n"));
     }
-    for column in table.column_iter_mut().skip(1) {
-        column.set_cell_alignment(CellAlignment::Right);
-        column.set_constraint(comfy_table::ColumnConstraint::LowerBoundary(
-            comfy_table::Width::Fixed(FIGURE_WIDTH),
-        ));
-    }
-    table
+    let parts: Vec<_> = estimate
+        .assumptions
+        .iter()
+        .map(|a| format!("{} {}", a.name, a.value))
+        .collect();
+    let text = format!(
+        "Assumed (sources with --assumptions): {}.",
+        parts.join("; ")
+    );
+    wrapped(&text, "", "  ")
+}
+
+fn wrapped(text: &str, first: &str, others: &str) -> String {
+    let options = textwrap::Options::new(usize::from(WIDTH))
+        .initial_indent(first)
+        .subsequent_indent(others);
+    textwrap::fill(text, options)
 }

@@ -1,11 +1,14 @@
 //! One column of hourly values from a CSV file: prices, carbon intensity, household load, own generation.
 
+mod layout;
 mod read;
+mod time;
 
 use std::fs;
 use std::path::Path;
 
-pub use read::{Layout, Stamp, WithinHour, read_csv, read_text};
+pub use layout::{Layout, Stamp, WithinHour};
+pub use read::{read_csv, read_text};
 
 use chrono::{DateTime, Datelike, TimeZone, Timelike, Utc};
 

@@ -5,44 +5,12 @@
 
 use std::path::Path;
 
-use chrono::{DateTime, Duration, LocalResult, NaiveDate, NaiveDateTime, TimeZone, Utc};
-use chrono_tz::Tz;
+use chrono::{DateTime, Duration, Utc};
 
+use super::layout::{Layout, Stamp, WithinHour};
+use super::time::{Wrong, instant};
 use super::{Series, say};
 use crate::problem::{Place, Problem, Problems};
-
-/// What the time beside a value marks.
-#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
-pub enum Stamp {
-    /// The beginning of the interval.
-    #[default]
-    Beginning,
-    /// Its end.
-    Ending,
-}
-
-/// What several values within an hour come to.
-#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
-pub enum WithinHour {
-    /// Their mean: prices, intensities, powers.
-    #[default]
-    Mean,
-    /// Their sum: amounts of energy.
-    Sum,
-}
-
-/// How a file is to be read.
-#[derive(Debug, Clone, PartialEq, Eq)]
-pub struct Layout {
-    /// Header of the column of values; may be left out when there is only one beside the times.
-    pub column: Option<String>,
-    /// What its times mark.
-    pub stamp: Stamp,
-    /// The clock of times that do not carry an offset.
-    pub zone: Tz,
-    /// What several values within an hour come to.
-    pub within_hour: WithinHour,
-}
 
 /// Header of the column of times.
 const TIME: &str = "time";
@@ -112,19 +80,6 @@ pub fn read_text(file: &str, text: &str, layout: &Layout) -> Result<Series, Prob
     hours(&place, rows, layout)
 }
 
-/// What is wrong with one field.
-struct Wrong {
-    found: String,
-    allowed: &'static str,
-    remedy: &'static str,
-}
-
-impl Wrong {
-    fn at(self, place: Place) -> Problem {
-        Problem::new(place, self.found, self.allowed, self.remedy)
-    }
-}
-
 fn unreadable(place: &Place, error: &csv::Error) -> Problems {
     let line = error.position().map_or(0, |position| position.line());
     let place = place.clone().at_line(usize::try_from(line).unwrap_or(0));
@@ -188,60 +143,6 @@ fn columns(
         },
     };
     Ok((time, value))
-}
-
-/// The instant of a time; a clock time that occurs twice is the second one when the first has gone by.
-fn instant(text: &str, zone: Tz, before: Option<DateTime<Utc>>) -> Result<DateTime<Utc>, Wrong> {
-    let wrong = |found| Wrong {
-        found,
-        allowed: "a time such as 2024-01-31T15:00Z or 2024-01-31 15:00",
-        remedy: "write year-month-day and hour:minute",
-    };
-    for form in [
-        "%Y-%m-%dT%H:%M:%S%#z",
-        "%Y-%m-%dT%H:%M%#z",
-        "%Y-%m-%d %H:%M:%S%#z",
-        "%Y-%m-%d %H:%M%#z",
-    ] {
-        if let Ok(instant) = DateTime::parse_from_str(text, form) {
-            return Ok(instant.with_timezone(&Utc));
-        }
-    }
-    let clock = [
-        "%Y-%m-%dT%H:%M:%S",
-        "%Y-%m-%dT%H:%M",
-        "%Y-%m-%d %H:%M:%S",
-        "%Y-%m-%d %H:%M",
-    ]
-    .iter()
-    .find_map(|form| NaiveDateTime::parse_from_str(text, form).ok())
-    .or_else(|| end_of_day(text))
-    .ok_or_else(|| wrong(format!("\"{text}\" is not a time")))?;
-    match zone.from_local_datetime(&clock) {
-        LocalResult::Single(instant) => Ok(instant.with_timezone(&Utc)),
-        LocalResult::Ambiguous(first, second) => {
-            let first = first.with_timezone(&Utc);
-            if before.is_none_or(|before| before < first) {
-                Ok(first)
-            } else {
-                Ok(second.with_timezone(&Utc))
-            }
-        }
-        LocalResult::None => Err(Wrong {
-            found: format!("{text} does not exist in {zone}: the clock skips it"),
-            allowed: "times that the clock shows",
-            remedy: "set the time zone the file is really in, such as time_zone = \"UTC\"",
-        }),
-    }
-}
-
-/// `2024-01-31 24:00`, the midnight that ends the day.
-fn end_of_day(text: &str) -> Option<NaiveDateTime> {
-    let date = ["T24:00:00", " 24:00:00", "T24:00", " 24:00"]
-        .iter()
-        .find_map(|end| text.strip_suffix(end))?;
-    let date: NaiveDate = date.parse().ok()?;
-    date.succ_opt()?.and_hms_opt(0, 0, 0)
 }
 
 fn number(text: &str) -> Result<f64, Wrong> {
@@ -320,7 +221,7 @@ fn hours(
     };
     let start = first - Duration::seconds(back);
     let per_hour = usize::try_from(HOUR_S / step).unwrap_or(1);
-    if start.timestamp().rem_euclid(HOUR_S) != 0 || rows.len() % per_hour != 0 {
+    if start.timestamp().rem_euclid(HOUR_S) != 0 || !rows.len().is_multiple_of(per_hour) {
         let found = format!(
             "{} values from {}, {per_hour} an hour",
             rows.len(),

@@ -25,7 +25,8 @@ impl UTube {
 
     /// Whether both legs are inside the bore and beside each other.
     pub fn fits(&self) -> bool {
-        self.spacing_m >= self.pipe.outside_m && self.spacing_m + self.pipe.outside_m <= 2.0 * self.bore_radius_m
+        self.spacing_m >= self.pipe.outside_m
+            && self.spacing_m + self.pipe.outside_m <= 2.0 * self.bore_radius_m
     }
 
     /// Local borehole resistance Rb, m K/W: from the mean of the fluid in both legs to the mean of the wall.
@@ -35,7 +36,8 @@ impl UTube {
     pub fn local_resistance(&self, ground_w_per_m_k: f64, fluid_to_pipe_m_k_per_w: f64) -> f64 {
         let m = self.multipole(ground_w_per_m_k, fluid_to_pipe_m_k_per_w);
         let line = m.beta + (m.theta2 / (2.0 * m.theta1 * (1.0 - m.theta1_4).powf(m.sigma))).ln();
-        let above = m.theta3.powi(2) * (1.0 - 4.0 * m.sigma * m.theta1_4 / (1.0 - m.theta1_4)).powi(2);
+        let above =
+            m.theta3.powi(2) * (1.0 - 4.0 * m.sigma * m.theta1_4 / (1.0 - m.theta1_4)).powi(2);
         let below = (1.0 + m.beta) / (1.0 - m.beta)
             + m.theta3.powi(2) * (1.0 + 16.0 * m.sigma * m.theta1_4 / (1.0 - m.theta1_4).powi(2));
         (line - above / below) / (4.0 * PI * self.grout_w_per_m_k)
@@ -45,7 +47,8 @@ impl UTube {
     pub fn internal_resistance(&self, ground_w_per_m_k: f64, fluid_to_pipe_m_k_per_w: f64) -> f64 {
         let m = self.multipole(ground_w_per_m_k, fluid_to_pipe_m_k_per_w);
         let square = m.theta1.powi(2);
-        let line = m.beta + ((1.0 + square).powf(m.sigma) / (m.theta3 * (1.0 - square).powf(m.sigma))).ln();
+        let line = m.beta
+            + ((1.0 + square).powf(m.sigma) / (m.theta3 * (1.0 - square).powf(m.sigma))).ln();
         let above = m.theta3.powi(2) * (1.0 - m.theta1_4 + 4.0 * m.sigma * square).powi(2);
         let below = (1.0 + m.beta) / (1.0 - m.beta) * (1.0 - m.theta1_4).powi(2)
             - m.theta3.powi(2) * (1.0 - m.theta1_4).powi(2)
@@ -76,7 +79,8 @@ impl UTube {
             theta1_4: theta1.powi(4),
             theta2: 2.0 * self.bore_radius_m / self.pipe.outside_m,
             theta3: self.pipe.outside_m / (2.0 * self.spacing_m),
-            sigma: (self.grout_w_per_m_k - ground_w_per_m_k) / (self.grout_w_per_m_k + ground_w_per_m_k),
+            sigma: (self.grout_w_per_m_k - ground_w_per_m_k)
+                / (self.grout_w_per_m_k + ground_w_per_m_k),
             beta: 2.0 * PI * self.grout_w_per_m_k * fluid_to_pipe_m_k_per_w,
         }
     }
@@ -97,15 +101,32 @@ mod tests {
     use super::*;
 
     fn tube() -> UTube {
-        let pipe = Pipe { outside_m: 0.04, wall_m: 0.0037, conductivity_w_per_m_k: 0.42 };
-        UTube { bore_radius_m: 0.065, pipe, spacing_m: UTube::even_spacing_m(0.065, 0.04), grout_w_per_m_k: 1.5 }
+        let pipe = Pipe {
+            outside_m: 0.04,
+            wall_m: 0.0037,
+            conductivity_w_per_m_k: 0.42,
+        };
+        UTube {
+            bore_radius_m: 0.065,
+            pipe,
+            spacing_m: UTube::even_spacing_m(0.065, 0.04),
+            grout_w_per_m_k: 1.5,
+        }
     }
 
     #[test]
     fn better_grout_and_wider_legs_lower_the_resistance() {
         let usual = tube().local_resistance(2.0, 0.09);
-        let grouted = UTube { grout_w_per_m_k: 2.0, ..tube() }.local_resistance(2.0, 0.09);
-        let wide = UTube { spacing_m: 0.085, ..tube() }.local_resistance(2.0, 0.09);
+        let grouted = UTube {
+            grout_w_per_m_k: 2.0,
+            ..tube()
+        }
+        .local_resistance(2.0, 0.09);
+        let wide = UTube {
+            spacing_m: 0.085,
+            ..tube()
+        }
+        .local_resistance(2.0, 0.09);
         assert!(grouted < usual && wide < usual);
         // Grouted single U-tubes lie between 0.08 and 0.2 m K/W: common practice, no source.
         assert!((0.08..0.2).contains(&usual), "{usual}");
@@ -124,7 +145,19 @@ mod tests {
     #[test]
     fn legs_must_fit_into_the_bore() {
         assert!(tube().fits());
-        assert!(!UTube { spacing_m: 0.03, ..tube() }.fits());
-        assert!(!UTube { spacing_m: 0.1, ..tube() }.fits());
+        assert!(
+            !UTube {
+                spacing_m: 0.03,
+                ..tube()
+            }
+            .fits()
+        );
+        assert!(
+            !UTube {
+                spacing_m: 0.1,
+                ..tube()
+            }
+            .fits()
+        );
     }
 }

@@ -22,7 +22,10 @@ pub struct Bore {
 
 impl Bore {
     fn line(&self) -> Vertical {
-        Vertical { top_m: self.buried_m, length_m: self.depth_m }
+        Vertical {
+            top_m: self.buried_m,
+            length_m: self.depth_m,
+        }
     }
 
     fn distance_m(&self, other: &Self) -> f64 {
@@ -52,9 +55,18 @@ pub fn wall_response(bores: &[Bore], soil: &Soil, times_h: &[f64]) -> Vec<f64> {
     for (i, source) in bores.iter().enumerate() {
         for felt in &bores[i..] {
             let same = std::ptr::eq(source, felt);
-            let distance_m = if same { source.radius_m } else { source.distance_m(felt) };
-            let curve =
-                rule.curve(source.line(), felt.line(), distance_m, soil.diffusivity_m2_per_s, &times_s);
+            let distance_m = if same {
+                source.radius_m
+            } else {
+                source.distance_m(felt)
+            };
+            let curve = rule.curve(
+                source.line(),
+                felt.line(),
+                distance_m,
+                soil.diffusivity_m2_per_s,
+                &times_s,
+            );
             // By reciprocity the other direction, times its length, is the same.
             let weight = if same { 1.0 } else { 2.0 } * felt.depth_m;
             for (sum, value) in sum.iter_mut().zip(curve) {
@@ -70,10 +82,19 @@ pub fn wall_response(bores: &[Bore], soil: &Soil, times_h: &[f64]) -> Vec<f64> {
 mod tests {
     use super::*;
 
-    const SOIL: Soil = Soil { conductivity_w_per_m_k: 2.0, diffusivity_m2_per_s: 1e-6 };
+    const SOIL: Soil = Soil {
+        conductivity_w_per_m_k: 2.0,
+        diffusivity_m2_per_s: 1e-6,
+    };
 
     fn bore(x_m: f64) -> Bore {
-        Bore { x_m, y_m: 0.0, depth_m: 100.0, buried_m: 4.0, radius_m: 0.075 }
+        Bore {
+            x_m,
+            y_m: 0.0,
+            depth_m: 100.0,
+            buried_m: 4.0,
+            radius_m: 0.075,
+        }
     }
 
     #[test]
@@ -91,7 +112,10 @@ mod tests {
     #[test]
     fn two_halves_of_a_bore_are_not_a_short_bore() {
         // Unequal bores: the mean lies between the two alone and the order does not matter.
-        let short = Bore { depth_m: 60.0, ..bore(6.0) };
+        let short = Bore {
+            depth_m: 60.0,
+            ..bore(6.0)
+        };
         let a = wall_response(&[bore(0.0), short], &SOIL, &[8760.0])[0];
         let b = wall_response(&[short, bore(0.0)], &SOIL, &[8760.0])[0];
         assert!((a - b).abs() < 1e-12);

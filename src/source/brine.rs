@@ -42,8 +42,17 @@ pub const GREATEST_SHARE: f64 = 0.6;
 impl Brine {
     /// Water with a mass share of antifreeze, 0 to [`GREATEST_SHARE`]; nothing outside it.
     pub fn new(antifreeze: Antifreeze, mass_share: f64) -> Option<Self> {
-        let mass_share = if antifreeze == Antifreeze::Water { 0.0 } else { mass_share };
-        (0.0..=GREATEST_SHARE).contains(&mass_share).then_some(Self { antifreeze, mass_share })
+        let mass_share = if antifreeze == Antifreeze::Water {
+            0.0
+        } else {
+            mass_share
+        };
+        (0.0..=GREATEST_SHARE)
+            .contains(&mass_share)
+            .then_some(Self {
+                antifreeze,
+                mass_share,
+            })
     }
 
     /// What is dissolved.
@@ -61,8 +70,12 @@ impl Brine {
         let share = self.mass_share * 100.0;
         match self.antifreeze {
             Antifreeze::Water => "water".to_owned(),
-            Antifreeze::EthyleneGlycol => format!("water with {share:.0} % ethylene glycol by mass"),
-            Antifreeze::PropyleneGlycol => format!("water with {share:.0} % propylene glycol by mass"),
+            Antifreeze::EthyleneGlycol => {
+                format!("water with {share:.0} % ethylene glycol by mass")
+            }
+            Antifreeze::PropyleneGlycol => {
+                format!("water with {share:.0} % propylene glycol by mass")
+            }
         }
     }
 
@@ -116,8 +129,14 @@ struct Table {
     conductivity: Surface,
 }
 
-fn horner(coefficients: impl IntoIterator<Item = f64, IntoIter: DoubleEndedIterator>, x: f64) -> f64 {
-    coefficients.into_iter().rev().fold(0.0, |sum, c| sum * x + c)
+fn horner(
+    coefficients: impl IntoIterator<Item = f64, IntoIter: DoubleEndedIterator>,
+    x: f64,
+) -> f64 {
+    coefficients
+        .into_iter()
+        .rev()
+        .fold(0.0, |sum, c| sum * x + c)
 }
 
 fn surface(rows: Surface, x: f64, y: f64) -> f64 {
@@ -208,7 +227,10 @@ mod tests {
     fn a_share_outside_the_polynomials_is_no_brine() {
         assert!(Brine::new(Antifreeze::EthyleneGlycol, 0.61).is_none());
         assert!(Brine::new(Antifreeze::PropyleneGlycol, -0.1).is_none());
-        assert_eq!(Brine::new(Antifreeze::Water, 0.3).unwrap().mass_share(), 0.0);
+        assert_eq!(
+            Brine::new(Antifreeze::Water, 0.3).unwrap().mass_share(),
+            0.0
+        );
     }
 
     #[test]
@@ -219,7 +241,10 @@ mod tests {
                 .collect();
             for pair in all.windows(2) {
                 assert!(pair[1].freezing_c() < pair[0].freezing_c(), "{pair:?}");
-                assert!(pair[1].at(5.0).viscosity_pa_s > pair[0].at(5.0).viscosity_pa_s, "{pair:?}");
+                assert!(
+                    pair[1].at(5.0).viscosity_pa_s > pair[0].at(5.0).viscosity_pa_s,
+                    "{pair:?}"
+                );
             }
         }
     }

@@ -36,17 +36,31 @@ pub enum Pump {
 
 impl Circuit {
     /// A flow (kg/s) through a number of equal ways side by side, each a pipe of a length (m).
-    pub fn new(brine: Brine, flow_kg_per_s: f64, pipe: &Pipe, ways: usize, way_m: f64, pump: Pump) -> Self {
+    pub fn new(
+        brine: Brine,
+        flow_kg_per_s: f64,
+        pipe: &Pipe,
+        ways: usize,
+        way_m: f64,
+        pump: Pump,
+    ) -> Self {
         let properties = brine.at(BRINE_C);
         let in_pipe = pipe.flow(flow_kg_per_s / ways as f64, &properties);
         let pressure_kpa = in_pipe.pascal_per_m * way_m * (1.0 + FITTINGS) / 1000.0;
         let (pump_kw, pressure_kpa) = match pump {
             Pump::Power(kw) => (kw, None),
-            Pump::Efficiency(efficiency) => {
-                (pressure_kpa * flow_kg_per_s / properties.density_kg_per_m3 / efficiency, Some(pressure_kpa))
-            }
+            Pump::Efficiency(efficiency) => (
+                pressure_kpa * flow_kg_per_s / properties.density_kg_per_m3 / efficiency,
+                Some(pressure_kpa),
+            ),
         };
-        Self { brine, flow_kg_per_s, in_pipe, pressure_kpa, pump_kw }
+        Self {
+            brine,
+            flow_kg_per_s,
+            in_pipe,
+            pressure_kpa,
+            pump_kw,
+        }
     }
 
     /// Properties of the brine at [`BRINE_C`].
@@ -78,13 +92,20 @@ mod tests {
     #[test]
     fn pump_power_is_pressure_times_flow_over_efficiency() {
         let brine = Brine::new(Antifreeze::Water, 0.0).unwrap();
-        let pipe = Pipe { outside_m: 0.04, wall_m: 0.0037, conductivity_w_per_m_k: 0.42 };
+        let pipe = Pipe {
+            outside_m: 0.04,
+            wall_m: 0.0037,
+            conductivity_w_per_m_k: 0.42,
+        };
         let circuit = Circuit::new(brine, 0.4, &pipe, 1, 200.0, Pump::Efficiency(0.25));
         let pressure_kpa = circuit.pressure_kpa.unwrap();
         // 0.4 L/s against that pressure: W = kPa · L/s; a quarter of the plug's power reaches the water. Cold water is within half
         // a per cent of a kilogram a litre.
         let watts = pressure_kpa * 0.4 / 0.25;
-        assert!((circuit.pump_kw * 1000.0 / watts - 1.0).abs() < 0.005, "{circuit:?} {watts}");
+        assert!(
+            (circuit.pump_kw * 1000.0 / watts - 1.0).abs() < 0.005,
+            "{circuit:?} {watts}"
+        );
         assert!((circuit.capacity_kw_per_k() - 0.4 * 4.2).abs() < 0.01);
         let given = Circuit::new(brine, 0.4, &pipe, 1, 200.0, Pump::Power(0.07));
         assert_eq!((given.pump_kw, given.pressure_kpa), (0.07, None));

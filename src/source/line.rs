@@ -7,8 +7,8 @@ use std::f64::consts::PI;
 use std::num::NonZeroUsize;
 
 use gauss_quad::GaussLegendre;
-use statrs::function::erf::erf;
 use statrs::consts::EULER_MASCHERONI;
+use statrs::function::erf::erf;
 
 /// How far a line source stays behind a cylinder of the bore's radius whose filling holds no heat (Carslaw and Jaeger 1959 §13.5),
 /// at most, in units of q′/(2πk): the difference is greatest about α t = 0.27 r² and falls to 0.13 at 5 r²/α. A filling holds
@@ -38,7 +38,9 @@ pub(super) struct FiniteLine {
 
 impl FiniteLine {
     pub fn new() -> Self {
-        Self { rule: GaussLegendre::new(NonZeroUsize::new(POINTS).unwrap_or(NonZeroUsize::MIN)) }
+        Self {
+            rule: GaussLegendre::new(NonZeroUsize::new(POINTS).unwrap_or(NonZeroUsize::MIN)),
+        }
     }
 
     /// Response along `felt`, in units of q′/(2πk), at rising times (s), to `source` at a distance (m): the mean over the length.
@@ -58,7 +60,10 @@ impl FiniteLine {
         let lengths = signed_lengths(source, felt);
         let integrand = |ln_s: f64| {
             let s = ln_s.exp();
-            let sum: f64 = lengths.iter().map(|(sign, length)| sign * error_integral(length * s)).sum();
+            let sum: f64 = lengths
+                .iter()
+                .map(|(sign, length)| sign * error_integral(length * s))
+                .sum();
             // ds/s² = d(ln s)/s
             (-(distance_m * s).powi(2)).exp() * sum / s
         };
@@ -152,7 +157,10 @@ mod tests {
     /// methods §4 \[computed\]: H 100 m, D 4 m, r 0.075 m, α 1e-6 m²/s.
     #[test]
     fn one_bore_meets_the_published_values() {
-        let line = Vertical { top_m: 4.0, length_m: 100.0 };
+        let line = Vertical {
+            top_m: 4.0,
+            length_m: 100.0,
+        };
         let times = [1.0 / 12.0, 1.0, 10.0, 20.0, 50.0].map(|years| years * YEAR_S);
         let found = FiniteLine::new().curve(line, line, 0.075, 1e-6, &times);
         let expected = [3.46063, 4.65604, 5.63726, 5.87178, 6.10401];
@@ -167,7 +175,16 @@ mod tests {
     /// Reciprocity: what a long bore does to a short one, times their lengths, is what the short one does to the long one.
     #[test]
     fn neighbours_of_unequal_length_are_reciprocal() {
-        let (a, b) = (Vertical { top_m: 1.0, length_m: 120.0 }, Vertical { top_m: 3.0, length_m: 70.0 });
+        let (a, b) = (
+            Vertical {
+                top_m: 1.0,
+                length_m: 120.0,
+            },
+            Vertical {
+                top_m: 3.0,
+                length_m: 70.0,
+            },
+        );
         let rule = FiniteLine::new();
         let at = |from, to| rule.curve(from, to, 6.0, 1e-6, &[10.0 * YEAR_S])[0];
         assert!((at(a, b) * b.length_m / (at(b, a) * a.length_m) - 1.0).abs() < 1e-10);
@@ -176,7 +193,10 @@ mod tests {
     /// In its first days a bore's ends are not yet felt: the finite line is the infinite one.
     #[test]
     fn a_finite_line_begins_as_an_infinite_one() {
-        let line = Vertical { top_m: 2.0, length_m: 200.0 };
+        let line = Vertical {
+            top_m: 2.0,
+            length_m: 200.0,
+        };
         let time = 48.0 * 3600.0;
         let finite = FiniteLine::new().curve(line, line, 0.06, 1e-6, &[time])[0];
         // The ends reach √(αt) = 0.4 m into 200 m.
@@ -196,7 +216,10 @@ mod tests {
             (80.0, 2.228_543_258_688_473e-37),
         ];
         for (x, expected) in expected {
-            assert!((exponential_integral(x) / expected - 1.0).abs() < 1e-13, "{x}");
+            assert!(
+                (exponential_integral(x) / expected - 1.0).abs() < 1e-13,
+                "{x}"
+            );
         }
         assert_eq!(exponential_integral(1e6), 0.0);
     }

@@ -53,16 +53,19 @@ impl Pipe {
     pub fn flow(&self, kg_per_s: f64, brine: &BrineProperties) -> PipeFlow {
         let diameter_m = self.inside_m();
         let velocity_m_per_s = kg_per_s / (brine.density_kg_per_m3 * PI * diameter_m.powi(2) / 4.0);
-        let reynolds = brine.density_kg_per_m3 * velocity_m_per_s * diameter_m / brine.viscosity_pa_s;
+        let reynolds =
+            brine.density_kg_per_m3 * velocity_m_per_s * diameter_m / brine.viscosity_pa_s;
         let friction = friction_factor(reynolds, diameter_m);
-        let prandtl =
-            1000.0 * brine.heat_capacity_kj_per_kg_k * brine.viscosity_pa_s / brine.conductivity_w_per_m_k;
-        let film_w_per_m_k = nusselt(reynolds, prandtl, friction, diameter_m) * brine.conductivity_w_per_m_k;
+        let prandtl = 1000.0 * brine.heat_capacity_kj_per_kg_k * brine.viscosity_pa_s
+            / brine.conductivity_w_per_m_k;
+        let film_w_per_m_k =
+            nusselt(reynolds, prandtl, friction, diameter_m) * brine.conductivity_w_per_m_k;
         let wall = (self.outside_m / diameter_m).ln() / (2.0 * PI * self.conductivity_w_per_m_k);
         PipeFlow {
             reynolds,
             velocity_m_per_s,
-            pascal_per_m: friction * brine.density_kg_per_m3 * velocity_m_per_s.powi(2) / (2.0 * diameter_m),
+            pascal_per_m: friction * brine.density_kg_per_m3 * velocity_m_per_s.powi(2)
+                / (2.0 * diameter_m),
             // Film coefficient h = Nu k/d on the inner surface π d: 1/(π d h) = 1/(π Nu k).
             resistance_m_k_per_w: wall + 1.0 / (PI * film_w_per_m_k),
         }
@@ -76,7 +79,8 @@ fn friction_factor(reynolds: f64, diameter_m: f64) -> f64 {
     }
     let mut factor = 0.02;
     for _ in 0..MOST_FRICTION_STEPS {
-        let root = -2.0 * (ROUGHNESS_M / diameter_m / 3.7 + 2.51 / (reynolds * f64::sqrt(factor))).log10();
+        let root =
+            -2.0 * (ROUGHNESS_M / diameter_m / 3.7 + 2.51 / (reynolds * f64::sqrt(factor))).log10();
         let next = root.powi(-2);
         let change = (next / factor - 1.0).abs();
         factor = next;
@@ -91,7 +95,8 @@ fn friction_factor(reynolds: f64, diameter_m: f64) -> f64 {
 fn nusselt(reynolds: f64, prandtl: f64, friction: f64, diameter_m: f64) -> f64 {
     let gnielinski = |reynolds: f64, friction: f64| {
         let eighth = friction / 8.0;
-        eighth * (reynolds - 1000.0) * prandtl / (1.0 + 12.7 * eighth.sqrt() * (prandtl.powf(2.0 / 3.0) - 1.0))
+        eighth * (reynolds - 1000.0) * prandtl
+            / (1.0 + 12.7 * eighth.sqrt() * (prandtl.powf(2.0 / 3.0) - 1.0))
     };
     if reynolds <= LAMINAR_BELOW {
         LAMINAR_NUSSELT
@@ -119,9 +124,17 @@ mod tests {
 
     #[test]
     fn heat_transfer_is_continuous_and_laminar_flow_is_poor() {
-        let pipe = Pipe { outside_m: 0.04, wall_m: 0.0037, conductivity_w_per_m_k: 0.42 };
-        let brine = Brine::new(Antifreeze::EthyleneGlycol, 0.25).unwrap().at(0.0);
-        let flows: Vec<_> = (25..1000).map(|i| pipe.flow(f64::from(i) * 0.001, &brine)).collect();
+        let pipe = Pipe {
+            outside_m: 0.04,
+            wall_m: 0.0037,
+            conductivity_w_per_m_k: 0.42,
+        };
+        let brine = Brine::new(Antifreeze::EthyleneGlycol, 0.25)
+            .unwrap()
+            .at(0.0);
+        let flows: Vec<_> = (25..1000)
+            .map(|i| pipe.flow(f64::from(i) * 0.001, &brine))
+            .collect();
         for pair in flows.windows(2) {
             assert!(pair[1].resistance_m_k_per_w <= pair[0].resistance_m_k_per_w + 1e-12);
             assert!((pair[0].resistance_m_k_per_w - pair[1].resistance_m_k_per_w).abs() < 0.02);

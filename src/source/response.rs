@@ -32,14 +32,18 @@ pub struct Memory {
 impl Default for Memory {
     /// Ground from which nothing was ever drawn.
     fn default() -> Self {
-        Self { mean_kw: [0.0; TERMS] }
+        Self {
+            mean_kw: [0.0; TERMS],
+        }
     }
 }
 
 impl Memory {
     /// The memory of the same history with every draw multiplied: the ground is linear.
     pub fn times(&self, factor: f64) -> Self {
-        Self { mean_kw: self.mean_kw.map(|kw| kw * factor) }
+        Self {
+            mean_kw: self.mean_kw.map(|kw| kw * factor),
+        }
     }
 }
 
@@ -75,44 +79,74 @@ impl Response {
     pub fn fit(values: &[f64]) -> Result<Self, NoResponse> {
         let times_h = Self::times_h();
         if values.len() != times_h.len() || !values.iter().all(|value| value.is_finite()) {
-            return Err(NoResponse { why: format!("{} finite values are needed", times_h.len()) });
+            return Err(NoResponse {
+                why: format!("{} finite values are needed", times_h.len()),
+            });
         }
         let constants_h = constants_h();
-        let basis = DMatrix::from_fn(times_h.len(), TERMS, |i, j| -(-times_h[i] / constants_h[j]).exp_m1());
+        let basis = DMatrix::from_fn(times_h.len(), TERMS, |i, j| {
+            -(-times_h[i] / constants_h[j]).exp_m1()
+        });
         let wanted = DVector::from_column_slice(values);
         let svd = basis.clone().svd(true, true);
         let cut = RANK_TOLERANCE * svd.singular_values.max();
-        let solved = svd.solve(&wanted, cut).map_err(|why| NoResponse { why: why.to_owned() })?;
+        let solved = svd.solve(&wanted, cut).map_err(|why| NoResponse {
+            why: why.to_owned(),
+        })?;
         let fit_error = (&basis * &solved - &wanted).amax();
         if fit_error > FIT_TOLERANCE * wanted.amax() {
             return Err(NoResponse {
-                why: format!("the sum of exponentials misses the response by {fit_error:.2e} of {:.3}", wanted.amax()),
+                why: format!(
+                    "the sum of exponentials misses the response by {fit_error:.2e} of {:.3}",
+                    wanted.amax()
+                ),
             });
         }
         let weight = std::array::from_fn(|j| solved[j]);
         let kept: [f64; TERMS] = std::array::from_fn(|j| (-1.0 / constants_h[j]).exp());
         let kept_weight = std::array::from_fn(|j| weight[j] * kept[j]);
-        Ok(Self { weight, kept_weight, kept, fit_error })
+        Ok(Self {
+            weight,
+            kept_weight,
+            kept,
+            fit_error,
+        })
     }
 
     /// The response after a number of hours, in the unit of its values.
     pub fn after_h(&self, hours: f64) -> f64 {
-        constants_h().iter().zip(self.weight).map(|(constant, weight)| -weight * (-hours / constant).exp_m1()).sum()
+        constants_h()
+            .iter()
+            .zip(self.weight)
+            .map(|(constant, weight)| -weight * (-hours / constant).exp_m1())
+            .sum()
     }
 
     /// How much of the present hour's own draw is felt at its end.
     pub fn first_hour(&self) -> f64 {
-        self.weight.iter().zip(self.kept).map(|(weight, kept)| weight * (1.0 - kept)).sum()
+        self.weight
+            .iter()
+            .zip(self.kept)
+            .map(|(weight, kept)| weight * (1.0 - kept))
+            .sum()
     }
 
     /// What the past alone does at the end of the present hour: response times kW.
     pub fn of_the_past(&self, memory: &Memory) -> f64 {
-        self.kept_weight.iter().zip(memory.mean_kw).map(|(weight, kw)| weight * kw).sum()
+        self.kept_weight
+            .iter()
+            .zip(memory.mean_kw)
+            .map(|(weight, kw)| weight * kw)
+            .sum()
     }
 
     /// What everything up to now does: response times kW.
     pub fn now(&self, memory: &Memory) -> f64 {
-        self.weight.iter().zip(memory.mean_kw).map(|(weight, kw)| weight * kw).sum()
+        self.weight
+            .iter()
+            .zip(memory.mean_kw)
+            .map(|(weight, kw)| weight * kw)
+            .sum()
     }
 
     /// Lets an hour with a mean draw (kW, negative for heat put back) pass.
@@ -152,8 +186,10 @@ mod tests {
     use crate::source::line::infinite_line;
 
     fn line() -> Response {
-        let values: Vec<_> =
-            Response::times_h().iter().map(|h| infinite_line(0.065, 1e-6, h * 3600.0)).collect();
+        let values: Vec<_> = Response::times_h()
+            .iter()
+            .map(|h| infinite_line(0.065, 1e-6, h * 3600.0))
+            .collect();
         Response::fit(&values).unwrap()
     }
 
@@ -199,7 +235,9 @@ mod tests {
         assert!(Response::fit(&values[1..]).is_err());
         values[7] = f64::NAN;
         assert!(Response::fit(&values).is_err());
-        let jump: Vec<_> = (0..CURVE_POINTS).map(|i| if i < 150 { 0.0 } else { 1.0 }).collect();
+        let jump: Vec<_> = (0..CURVE_POINTS)
+            .map(|i| if i < 150 { 0.0 } else { 1.0 })
+            .collect();
         assert!(Response::fit(&jump).is_err());
     }
 

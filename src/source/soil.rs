@@ -36,7 +36,10 @@ pub struct RuleOfThumb {
 }
 
 const fn rule(at_1800_h: [f64; 2], at_2400_h: [f64; 2]) -> RuleOfThumb {
-    RuleOfThumb { at_1800_h, at_2400_h }
+    RuleOfThumb {
+        at_1800_h,
+        at_2400_h,
+    }
 }
 
 /// Poor dry ground, normal ground and ground of high conductivity of the same table, by conductivity, W/(m K): the bounds 1.5
@@ -47,8 +50,7 @@ const BY_CONDUCTIVITY: [(f64, RuleOfThumb); 3] = [
     (f64::INFINITY, rule([84.0, 84.0], [70.0, 70.0])),
 ];
 
-const CONDUCTIVITY: &str =
-    "conductivity: published table (secondary source); heat capacity: middle of VDI 4640-1 (from memory)";
+const CONDUCTIVITY: &str = "conductivity: published table (secondary source); heat capacity: middle of VDI 4640-1 (from memory)";
 const MEMORY: &str = "VDI 4640-1 (from memory)";
 
 /// The classes a brief can name.
@@ -122,7 +124,8 @@ impl SoilClass {
     pub fn soil(&self) -> Soil {
         Soil {
             conductivity_w_per_m_k: self.conductivity_w_per_m_k,
-            diffusivity_m2_per_s: self.conductivity_w_per_m_k / (self.heat_capacity_mj_per_m3_k * 1e6),
+            diffusivity_m2_per_s: self.conductivity_w_per_m_k
+                / (self.heat_capacity_mj_per_m3_k * 1e6),
         }
     }
 }
@@ -146,7 +149,10 @@ mod tests {
         for class in &SOILS {
             let soil = SoilClass::named(&class.name.to_uppercase()).unwrap().soil();
             // Range of soils and rocks in VDI 4640-1 [from memory].
-            assert!((2e-7..2e-6).contains(&soil.diffusivity_m2_per_s), "{class:?}");
+            assert!(
+                (2e-7..2e-6).contains(&soil.diffusivity_m2_per_s),
+                "{class:?}"
+            );
             let rule = class.rule_of_thumb;
             assert!(rule.at_1800_h[1] >= rule.at_2400_h[1], "{class:?}");
         }
@@ -156,6 +162,9 @@ mod tests {
     #[test]
     fn ground_known_by_conductivity_takes_the_three_rows_of_the_table() {
         let greatest = |k| RuleOfThumb::by_conductivity(k).at_1800_h[1];
-        assert_eq!([greatest(1.0), greatest(2.0), greatest(3.5)], [25.0, 60.0, 84.0]);
+        assert_eq!(
+            [greatest(1.0), greatest(2.0), greatest(3.5)],
+            [25.0, 60.0, 84.0]
+        );
     }
 }

@@ -30,7 +30,10 @@ impl WaterSource {
     /// What it offers in an hour: the machine's draw does not lower what enters it, only what leaves.
     pub fn offer(&self, hour: usize) -> Offer {
         let water_c = self.water_c.get(hour).copied().unwrap_or(f64::NAN);
-        Offer { open_c: water_c - self.approach_k, k_per_kw: 0.0 }
+        Offer {
+            open_c: water_c - self.approach_k,
+            k_per_kw: 0.0,
+        }
     }
 
     /// Temperature at which the water leaves at a draw (kW), °C.
@@ -53,8 +56,19 @@ mod tests {
 
     #[test]
     fn a_draw_cools_what_leaves_and_not_what_enters() {
-        let well = WaterSource { water_c: vec![10.0], approach_k: 2.0, flow_l_per_s: 0.5, pump_kw: 0.2 };
-        assert_eq!(well.offer(0), Offer { open_c: 8.0, k_per_kw: 0.0 });
+        let well = WaterSource {
+            water_c: vec![10.0],
+            approach_k: 2.0,
+            flow_l_per_s: 0.5,
+            pump_kw: 0.2,
+        };
+        assert_eq!(
+            well.offer(0),
+            Offer {
+                open_c: 8.0,
+                k_per_kw: 0.0
+            }
+        );
         assert!((well.leaving_c(0, 6.285) - 7.0).abs() < 1e-12);
     }
 }

@@ -24,7 +24,11 @@ pub struct Aged {
 impl Aged {
     /// The memory for a system that draws a number of kWh a year: the ground is linear, so the history is scaled.
     pub fn for_draw(&self, drawn_kwh: f64) -> Memory {
-        if self.drawn_kwh > 0.0 { self.memory.times(drawn_kwh / self.drawn_kwh) } else { self.memory }
+        if self.drawn_kwh > 0.0 {
+            self.memory.times(drawn_kwh / self.drawn_kwh)
+        } else {
+            self.memory
+        }
     }
 }
 
@@ -36,16 +40,33 @@ pub(super) fn settled(case: &Case, contender: &Contender, year: u32) -> Option<M
     /// Times that draw and ground are brought into line; the draw hardly depends on the ground.
     const PASSES: usize = 2;
     let machine = contender.remembering()?;
-    let Source::Buried(buried) = &machine.source else { return None };
+    let Source::Buried(buried) = &machine.source else {
+        return None;
+    };
     let first = case.site.years.first()?.1.start;
     let last = case.site.years.last()?.1.end;
     let rounds = f64::from(year.saturating_sub(1)) / case.site.years.len() as f64;
     let mut memory = Memory::default();
     for _ in 0..PASSES {
-        let mut state = State { ground: memory, ..State::at_rest(&contender.system, contender.indoor_c) };
-        let mut fresh = Remembering { buried, memory: Memory::default() };
-        run(&case.site, &contender.system, &contender.plan, first..last, &mut state, &mut fresh);
-        memory = buried.response().repeated(&fresh.memory, (last - first) as f64, rounds);
+        let mut state = State {
+            ground: memory,
+            ..State::at_rest(&contender.system, contender.indoor_c)
+        };
+        let mut fresh = Remembering {
+            buried,
+            memory: Memory::default(),
+        };
+        run(
+            &case.site,
+            &contender.system,
+            &contender.plan,
+            first..last,
+            &mut state,
+            &mut fresh,
+        );
+        memory = buried
+            .response()
+            .repeated(&fresh.memory, (last - first) as f64, rounds);
     }
     Some(memory)
 }
@@ -110,9 +131,21 @@ impl Case {
         for i in 0..years {
             drawn = Drawn::default();
             let (_, hours) = self.weather_year(i)?;
-            run(&self.site, &contender.system, &contender.plan, hours, &mut state, &mut drawn);
+            run(
+                &self.site,
+                &contender.system,
+                &contender.plan,
+                hours,
+                &mut state,
+                &mut drawn,
+            );
         }
-        Some(Aged { year, memory: state.ground, drawn_kwh: drawn.0, moved: false })
+        Some(Aged {
+            year,
+            memory: state.ground,
+            drawn_kwh: drawn.0,
+            moved: false,
+        })
     }
 
     /// The weather of a year of a loop's life, from 0.

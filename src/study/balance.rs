@@ -47,10 +47,17 @@ struct Surplus<'a> {
 impl Surplus<'_> {
     fn at(&self, outdoor_c: f64) -> f64 {
         let home = &self.system.home;
-        let load_kw = home.fabric.design_load_kw(self.indoor_c, outdoor_c).max(0.0);
+        let load_kw = home
+            .fabric
+            .design_load_kw(self.indoor_c, outdoor_c)
+            .max(0.0);
         // A cold night meets ground and water at their coldest.
         let offer = self.machine.source.cold_offer(outdoor_c, &self.ground);
-        let cold = ColdSide { open_c: offer.open_c, k_per_kw: offer.k_per_kw, relative_humidity: None };
+        let cold = ColdSide {
+            open_c: offer.open_c,
+            k_per_kw: offer.k_per_kw,
+            relative_humidity: None,
+        };
         let flow_c = home.emitters.at_load(load_kw, self.indoor_c).flow_c;
         self.machine.machine.greatest_output_kw(&cold, flow_c) - load_kw - self.water_kw
     }
@@ -77,9 +84,23 @@ pub fn balance_point(
     with_hot_water: bool,
     ground: Memory,
 ) -> Option<BalancePoint> {
-    let daily_kwh = system.home.hot_water.as_ref().map_or(0.0, |water| water.daily_kwh);
-    let water_kw = if with_hot_water { daily_kwh / 24.0 } else { 0.0 };
-    let surplus = Surplus { system, machine, indoor_c, water_kw, ground };
+    let daily_kwh = system
+        .home
+        .hot_water
+        .as_ref()
+        .map_or(0.0, |water| water.daily_kwh);
+    let water_kw = if with_hot_water {
+        daily_kwh / 24.0
+    } else {
+        0.0
+    };
+    let surplus = Surplus {
+        system,
+        machine,
+        indoor_c,
+        water_kw,
+        ground,
+    };
     let (low_c, high_c) = RANGE_C;
     if surplus.at(low_c) >= 0.0 {
         return Some(BalancePoint::BelowRange(low_c));

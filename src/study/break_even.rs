@@ -7,7 +7,6 @@ use super::case::Case;
 use super::lever::Lever;
 use super::outcome::{Outcome, price};
 use crate::problem::Problems;
-use crate::tariff::Reading;
 
 /// The range of a lever is looked through in this many steps, so that several crossings are all found.
 const STEPS: usize = 8;
@@ -48,21 +47,23 @@ impl Dearer<'_> {
     fn at(&self, value: f64) -> Result<f64, Problems> {
         // Only the two systems that are compared are moved and run.
         let mut pair = Case {
-            contenders: vec![self.case.contenders[0].clone(), self.case.contenders[self.choice].clone()],
+            contenders: vec![
+                self.case.contenders[0].clone(),
+                self.case.contenders[self.choice].clone(),
+            ],
             ..self.case.clone()
         };
         self.lever.apply(value, &mut pair, 1)?;
         if self.lever.moves_only_prices() {
             let cost = |contender: usize, outcome: &Outcome| {
-                let mut electricity = outcome.electricity.clone();
-                let mut fuel = outcome.fuel.clone();
-                // Where prices are hourly, the reading holds their sum, which moves with them.
-                match self.lever {
-                    Lever::ElectricityRate => scale(&mut electricity, value),
-                    _ => fuel.iter_mut().for_each(|reading| scale(reading, value)),
-                }
+                let fuel = outcome.fuel.as_ref();
                 let years = &pair.site.years;
-                price(&pair.contenders[contender], years, &electricity, fuel.as_ref())
+                price(
+                    &pair.contenders[contender],
+                    years,
+                    &outcome.electricity,
+                    fuel,
+                )
             };
             Ok(cost(1, &self.outcomes[self.choice])?.total - cost(0, &self.outcomes[0])?.total)
         } else {
@@ -70,10 +71,6 @@ impl Dearer<'_> {
             Ok(outcomes[1].costs.total - outcomes[0].costs.total)
         }
     }
-}
-
-fn scale(reading: &mut Reading, factor: f64) {
-    reading.hourly_cost.iter_mut().for_each(|cost| *cost *= factor);
 }
 
 impl CostFunction for &Dearer<'_> {
@@ -97,13 +94,24 @@ pub fn break_even(
     choice: usize,
     lever: Lever,
 ) -> Result<Option<BreakEven>, Problems> {
-    let Some(now) = lever.now(case, choice) else { return Ok(None) };
+    let Some(now) = lever.now(case, choice) else {
+        return Ok(None);
+    };
     let bound = lever.bound();
     let width = bound.high - bound.low;
-    let dearer = Dearer { case, outcomes, lever, choice };
-    let values: Vec<f64> =
-        (0..=STEPS).map(|i| bound.low + width * i as f64 / STEPS as f64).collect();
-    let costs = values.iter().map(|&value| dearer.at(value)).collect::<Result<Vec<_>, _>>()?;
+    let dearer = Dearer {
+        case,
+        outcomes,
+        lever,
+        choice,
+    };
+    let values: Vec<f64> = (0..=STEPS)
+        .map(|i| bound.low + width * i as f64 / STEPS as f64)
+        .collect();
+    let costs = values
+        .iter()
+        .map(|&value| dearer.at(value))
+        .collect::<Result<Vec<_>, _>>()?;
     let mut crossings = Vec::new();
     for i in 0..STEPS {
         let (low, high) = (costs[i], costs[i + 1]);
@@ -117,8 +125,15 @@ pub fn break_even(
         if let Ok(solved) = solved
             && let Some(&value) = solved.state().get_best_param()
         {
-            crossings.push(Crossing { value, cheaper_above: high < low });
+            crossings.push(Crossing {
+                value,
+                cheaper_above: high < low,
+            });
         }
     }
-    Ok(Some(BreakEven { lever, now, crossings }))
+    Ok(Some(BreakEven {
+        lever,
+        now,
+        crossings,
+    }))
 }

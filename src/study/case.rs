@@ -68,7 +68,10 @@ impl Case {
     /// # Errors
     /// When a bill cannot be made, such as a missing hourly price.
     pub fn run(&self) -> Result<Vec<Outcome>, Problems> {
-        self.contenders.iter().map(|contender| self.run_one(contender, None)).collect()
+        self.contenders
+            .iter()
+            .map(|contender| self.run_one(contender, None))
+            .collect()
     }
 
     /// Runs one system through every year, keeping its rows in a ledger where one is given.
@@ -106,7 +109,10 @@ impl Case {
     ) -> Result<Outcome, Problems> {
         let site = &*self.site;
         let (system, plan) = (&contender.system, &contender.plan);
-        let mut state = State { ground, ..State::at_rest(system, contender.indoor_c) };
+        let mut state = State {
+            ground,
+            ..State::at_rest(system, contender.indoor_c)
+        };
         let mut metered = Metered::new(
             &contender.electricity.meter,
             contender.fuel.as_ref().map(|fuel| &*fuel.meter),
@@ -118,9 +124,16 @@ impl Case {
             run(site, system, plan, hours.clone(), &mut state, &mut sink);
             years.push(YearOutcome::new(*year, &totals));
         }
-        let Metered { electricity, fuel, .. } = metered;
+        let Metered {
+            electricity, fuel, ..
+        } = metered;
         let costs = price(contender, &site.years, &electricity, fuel.as_ref())?;
-        Ok(Outcome { years, electricity, fuel, costs })
+        Ok(Outcome {
+            years,
+            electricity,
+            fuel,
+            costs,
+        })
     }
 }
 

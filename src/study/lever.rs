@@ -41,7 +41,12 @@ impl Lever {
             Self::FlowTemperature => ("design flow temperature", 35.0, 65.0, "°C"),
             Self::FieldFactor => ("share of laboratory performance kept", 0.6, 1.0, ""),
         };
-        Bound { label, low, high, unit }
+        Bound {
+            label,
+            low,
+            high,
+            unit,
+        }
     }
 
     /// Where it stands now for a choice; nothing where the choice has no such quantity.
@@ -77,7 +82,12 @@ impl Lever {
             Self::FuelRate => {
                 for contender in &mut case.contenders {
                     contender.fuel = contender.fuel.as_ref().map(|fuel| scaled(fuel, value));
-                    for price in contender.plan.fuel.iter_mut().flat_map(|fuel| &mut fuel.price) {
+                    for price in contender
+                        .plan
+                        .fuel
+                        .iter_mut()
+                        .flat_map(|fuel| &mut fuel.price)
+                    {
                         *price *= value;
                     }
                 }
@@ -102,7 +112,6 @@ impl Lever {
                 {
                     system.machine = system.machine.with_field_factor(value);
                 }
-
             }
         }
         Ok(())
@@ -111,7 +120,7 @@ impl Lever {
 
 /// The same account with every price of a kilowatt-hour multiplied.
 ///
-/// Buckets do not depend on rates, so the meter stays; hourly prices are the exception, and their sums scale with them.
+/// Buckets do not depend on rates and hourly sums are kept before scaling, so meter and readings stay.
 fn scaled(account: &Account, factor: f64) -> Account {
     Account {
         tariff: Arc::new(account.tariff.with_energy_times(factor)),

@@ -76,7 +76,12 @@ impl Tally {
             greatest_draw_kw: 0.0,
             sums: Sums::default(),
         };
-        Self { year, hours: 0.0, entering_sum: 0.0, wall_sum: 0.0 }
+        Self {
+            year,
+            hours: 0.0,
+            entering_sum: 0.0,
+            wall_sum: 0.0,
+        }
     }
 
     fn take(&mut self, row: &Row, brine: Option<BrineHour>, wall_c: Option<f64>) {
@@ -86,17 +91,24 @@ impl Tally {
         if let Some(brine) = brine {
             self.entering_sum += brine.entering_c * row.running_hours;
             year.greatest_draw_kw = year.greatest_draw_kw.max(brine.draw_kw);
-            if year.coldest.is_none_or(|coldest| brine.entering_c < coldest.entering_c) {
+            if year
+                .coldest
+                .is_none_or(|coldest| brine.entering_c < coldest.entering_c)
+            {
                 year.coldest = Some(brine);
             }
         }
         if let Some(wall_c) = wall_c {
             self.wall_sum += wall_c;
-            year.lowest_wall_c = Some(year.lowest_wall_c.map_or(wall_c, |lowest| lowest.min(wall_c)));
+            year.lowest_wall_c = Some(
+                year.lowest_wall_c
+                    .map_or(wall_c, |lowest| lowest.min(wall_c)),
+            );
             year.hours_wall_frozen += u32::from(wall_c < 0.0);
         }
         year.hours_stopped += u32::from(row.flags.has(Flags::MACHINE_STOPPED));
-        year.hours_backup += u32::from(row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION));
+        year.hours_backup +=
+            u32::from(row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION));
         year.hours_short += u32::from(row.flags.has(Flags::SHORT));
     }
 
@@ -115,11 +127,17 @@ pub fn loop_life(
     years: u32,
     mut watch: impl FnMut(u32, usize, Option<BrineHour>),
 ) -> Vec<LoopYear> {
-    let Heating::HeatPump(machine) = &contender.system.heating else { return Vec::new() };
+    let Heating::HeatPump(machine) = &contender.system.heating else {
+        return Vec::new();
+    };
     let mut state = State::at_rest(&contender.system, contender.indoor_c);
     let weather = (0..years).filter_map(|i| Some((i + 1, case.weather_year(i)?.1)));
     weather
-        .map(|(year, hours)| one_year(case, contender, machine, year, hours, &mut state, &mut watch))
+        .map(|(year, hours)| {
+            one_year(
+                case, contender, machine, year, hours, &mut state, &mut watch,
+            )
+        })
         .collect()
 }
 
@@ -134,7 +152,14 @@ fn one_year(
 ) -> LoopYear {
     let mut tally = Tally::new(year);
     for hour in hours {
-        let row = step(hour, &case.site, &contender.system, &contender.plan, state, &mut Unwatched);
+        let row = step(
+            hour,
+            &case.site,
+            &contender.system,
+            &contender.plan,
+            state,
+            &mut Unwatched,
+        );
         let brine = brine_hour(machine, hour, &row);
         let wall_c = match &machine.source {
             Source::Buried(buried) => Some(buried.wall_c(hour, &state.ground)),
@@ -155,7 +180,12 @@ fn brine_hour(machine: &MachineSystem, hour: usize, row: &Row) -> Option<BrineHo
         Source::Water(water) => water.leaving_c(hour, draw_kw),
         Source::OutdoorAir | Source::Ground(_) => f64::NAN,
     };
-    Some(BrineHour { entering_c, mean_c: (entering_c + leaving_c) / 2.0, leaving_c, draw_kw })
+    Some(BrineHour {
+        entering_c,
+        mean_c: (entering_c + leaving_c) / 2.0,
+        leaving_c,
+        draw_kw,
+    })
 }
 
 /// The shortest loop that keeps the brine entering the machine at or above a floor.
@@ -194,11 +224,17 @@ pub fn shortest_loop(
     floor_c: f64,
     year: u32,
 ) -> Result<ShortestLoop, NoShortest> {
-    let Some(machine) = contender.remembering() else { return Err(NoShortest::NotBuried) };
-    let Source::Buried(buried) = &machine.source else { return Err(NoShortest::NotBuried) };
+    let Some(machine) = contender.remembering() else {
+        return Err(NoShortest::NotBuried);
+    };
+    let Source::Buried(buried) = &machine.source else {
+        return Err(NoShortest::NotBuried);
+    };
     let stands = |length_m: f64| -> Result<bool, NoShortest> {
         let trial = with_length(contender, machine, buried, length_m)?;
-        let Some(coldest) = coldest_settled(case, &trial, year) else { return Ok(false) };
+        let Some(coldest) = coldest_settled(case, &trial, year) else {
+            return Ok(false);
+        };
         Ok(coldest >= floor_c)
     };
     let (mut short_m, mut long_m) = (buried.length_m() * STRETCH.0, buried.length_m() * STRETCH.1);
@@ -222,7 +258,11 @@ pub fn shortest_loop(
     let found = with_length(contender, machine, buried, long_m)?;
     let life = loop_life(case, &found, year, |_, _, _| {});
     let last = life.into_iter().last().ok_or(NoShortest::NotBuried)?;
-    Ok(ShortestLoop { floor_c, length_m: long_m, year: last })
+    Ok(ShortestLoop {
+        floor_c,
+        length_m: long_m,
+        year: last,
+    })
 }
 
 /// The contender with a loop of another length.
@@ -233,7 +273,11 @@ fn with_length(
     length_m: f64,
 ) -> Result<Contender, NoShortest> {
     let hours = buried.undisturbed().len();
-    let other = buried.design.with_length(length_m).build(hours).map_err(NoShortest::Response)?;
+    let other = buried
+        .design
+        .with_length(length_m)
+        .build(hours)
+        .map_err(NoShortest::Response)?;
     let mut contender = contender.clone();
     contender.aged = None;
     contender.system.heating = Heating::HeatPump(Box::new(MachineSystem {
@@ -247,8 +291,23 @@ fn with_length(
 fn coldest_settled(case: &Case, contender: &Contender, year: u32) -> Option<f64> {
     let machine = contender.remembering()?;
     let memory = settled(case, contender, year)?;
-    let mut state = State { ground: memory, ..State::at_rest(&contender.system, contender.indoor_c) };
+    let mut state = State {
+        ground: memory,
+        ..State::at_rest(&contender.system, contender.indoor_c)
+    };
     let (_, hours) = case.weather_year(year.saturating_sub(1))?;
-    let lived = one_year(case, contender, machine, year, hours, &mut state, &mut |_, _, _| {});
-    if lived.hours_stopped > 0 { None } else { lived.coldest.map(|coldest| coldest.entering_c) }
+    let lived = one_year(
+        case,
+        contender,
+        machine,
+        year,
+        hours,
+        &mut state,
+        &mut |_, _, _| {},
+    );
+    if lived.hours_stopped > 0 {
+        None
+    } else {
+        lived.coldest.map(|coldest| coldest.entering_c)
+    }
 }

@@ -7,6 +7,7 @@ mod case;
 mod lever;
 mod loop_life;
 mod outcome;
+mod traced;
 
 pub use ageing::{Aged, SHOWN_YEAR};
 pub use balance::{BalancePoint, balance_point};
@@ -15,3 +16,4 @@ pub use case::{Account, Case, Contender};
 pub use lever::Lever;
 pub use loop_life::{BrineHour, LoopYear, NoShortest, ShortestLoop, loop_life, shortest_loop};
 pub use outcome::{Costs, Outcome, YearOutcome};
+pub use traced::{Traced, TracedDuty, Wanted, trace};

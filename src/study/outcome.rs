@@ -20,8 +20,8 @@ pub struct Costs {
     pub energy: f64,
     /// Standing and demand charges before tax that is added.
     pub standing: f64,
-    /// Tax that is added.
-    pub tax: f64,
+    /// Tax that is added; nothing where every rate holds it already.
+    pub tax: Option<f64>,
     /// Total of each civil month.
     pub months: [f64; 12],
     /// Total of each year of the weather.
@@ -118,8 +118,15 @@ pub(super) fn price(
     electricity: &Reading,
     fuel: Option<&Reading>,
 ) -> Result<Costs, Problems> {
-    let mut costs = Costs { by_year: vec![0.0; years.len()], ..Costs::default() };
-    add(&mut costs, years, &bill(contender, &contender.electricity, electricity)?);
+    let mut costs = Costs {
+        by_year: vec![0.0; years.len()],
+        ..Costs::default()
+    };
+    add(
+        &mut costs,
+        years,
+        &bill(contender, &contender.electricity, electricity)?,
+    );
     if let (Some(account), Some(reading)) = (&contender.fuel, fuel) {
         add(&mut costs, years, &bill(contender, account, reading)?);
     }
@@ -127,7 +134,12 @@ pub(super) fn price(
 }
 
 fn bill(contender: &Contender, account: &Account, reading: &Reading) -> Result<Bill, Problems> {
-    price_reading(&account.tariff, &account.meter, reading, contender.connection())
+    price_reading(
+        &account.tariff,
+        &account.meter,
+        reading,
+        contender.connection(),
+    )
 }
 
 /// Decimal amounts of a household are far inside what an `f64` holds exactly to the cent.
@@ -140,11 +152,15 @@ fn add(costs: &mut Costs, years: &[(i32, Range<usize>)], bill: &Bill) {
     costs.total += number(bill.total()) / count;
     costs.energy += number(bill.energy() + bill.export().unwrap_or_default()) / count;
     costs.standing += number(bill.standing() + bill.demand()) / count;
-    costs.tax += bill.tax().map_or(0.0, number) / count;
+    if let Some(tax) = bill.tax() {
+        *costs.tax.get_or_insert(0.0) += number(tax) / count;
+    }
     for month in &bill.months {
         costs.months[month.month0] += number(month.amount) / count;
         // A few hours of a UTC year can fall into the civil year beside it: they stay with their weather year.
-        let place = years.partition_point(|(year, _)| *year < month.year).min(years.len() - 1);
+        let place = years
+            .partition_point(|(year, _)| *year < month.year)
+            .min(years.len() - 1);
         costs.by_year[place] += number(month.amount);
     }
 }

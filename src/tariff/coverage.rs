@@ -4,7 +4,8 @@ use std::collections::BTreeMap;
 
 use chrono::Weekday;
 
-use super::clock::{Days, MINUTES, When, YearDay, clock};
+use super::clock::{MINUTES, When, clock};
+use super::days::{Days, YearDay};
 
 /// Something wrong with a set of bands.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -29,10 +30,13 @@ pub enum Flaw {
     },
 }
 
+/// Days of the year, each with the weekdays that it may fall on.
+type DaySet = Vec<(YearDay, Weekday)>;
+
 /// Every flaw of a list of bands, each once, with all the days it occurs on.
 pub fn flaws(bands: &[When]) -> Vec<Flaw> {
     // The same flaw on several kinds of day is one flaw.
-    let mut found: BTreeMap<(u8, usize, usize, String), Vec<(YearDay, Weekday)>> = BTreeMap::new();
+    let mut found: BTreeMap<(u8, usize, usize, String), DaySet> = BTreeMap::new();
     for (active, days) in kinds(bands) {
         for (from, to, cover) in runs(bands, &active) {
             let clock = format!("{}–{}", clock(from), clock(to));
@@ -77,8 +81,8 @@ const WEEK: [Weekday; 7] = [
 type Cover = (Option<usize>, Option<usize>);
 
 /// Days on which the same bands hold are one kind of day: the bands, and the days.
-fn kinds(bands: &[When]) -> BTreeMap<Vec<usize>, Vec<(YearDay, Weekday)>> {
-    let mut kinds: BTreeMap<Vec<usize>, Vec<(YearDay, Weekday)>> = BTreeMap::new();
+fn kinds(bands: &[When]) -> BTreeMap<Vec<usize>, DaySet> {
+    let mut kinds: BTreeMap<Vec<usize>, DaySet> = BTreeMap::new();
     for day in YearDay::all() {
         for weekday in WEEK {
             let active = (0..bands.len())
@@ -169,7 +173,8 @@ fn say_days(days: &[(YearDay, Weekday)]) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::super::clock::{Season, Window, parse_clock};
+    use super::super::clock::{Window, parse_clock};
+    use super::super::days::Season;
     use super::*;
 
     fn when(from: &str, to: &str, days: &str, season: Option<&str>) -> When {

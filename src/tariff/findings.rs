@@ -51,7 +51,11 @@ impl Tariff {
                     "they are used as they are".to_owned(),
                 );
             }
-            if hourly.every_year && civil.iter().any(|hour| hourly.per_kwh.at(hour).is_none()) {
+            // Less than a day is the edge between two clocks, not another year.
+            let elsewhere = civil
+                .iter()
+                .filter(|hour| hourly.per_kwh.at(hour).is_none());
+            if hourly.every_year && elsewhere.count() >= 24 {
                 let covers = hourly.per_kwh.covers();
                 note(
                     format!(

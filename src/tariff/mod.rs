@@ -6,16 +6,17 @@
 
 mod clock;
 mod coverage;
+mod days;
 mod file;
 mod findings;
 mod meter;
 mod metering;
 mod rate;
+mod sort;
 
-pub use clock::{
-    Days, Holidays, MINUTES, Season, When, Window, YearDay, clock, month_name, parse_clock,
-};
+pub use clock::{MINUTES, When, Window, clock, parse_clock};
 pub use coverage::{ClockDay, Flaw, clock_days, flaws};
+pub use days::{Days, Holidays, Season, YearDay, month_name};
 pub use file::TariffFields;
 pub use meter::{Bucket, Meter, Reading, Segment};
 pub use metering::{Flows, Metering};
@@ -78,8 +79,10 @@ pub struct Prices {
 /// A price for every hour.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Hourly {
-    /// Currency units per gross kilowatt-hour.
+    /// Currency units per gross kilowatt-hour, as the file gives them.
     pub per_kwh: Series,
+    /// What they are multiplied by; a meter keeps them as given, so that it outlasts a change of price level.
+    pub times: f64,
     /// Use the prices of the same day and hour (UTC) for any year.
     pub every_year: bool,
 }
@@ -101,8 +104,8 @@ impl Tariff {
     /// Price signal of every hour, currency units per gross kilowatt-hour with tax.
     ///
     /// Steps depend on what is used: the signal takes the step that the last kilowatt-hour of a period reaches when
-    /// `expected_kwh_per_year` is spread evenly, or the first step when nothing is expected. `Reading::signal_cost`
-    /// tells afterwards how far that was from the bill.
+    /// `expected_kwh_per_year` is spread evenly, or the first step when nothing is expected. [`Meter::signal_cost`]
+    /// tells afterwards how far that was from the bill. A demand charge is not in the signal.
     ///
     /// # Errors
     /// When an hourly price is missing for an hour.
@@ -122,7 +125,9 @@ impl Tariff {
         Meter::new(self, civil)
     }
 
-    /// The same tariff with every price of a kilowatt-hour multiplied; standing and demand charges stay.
+    /// The same tariff with every price of a kilowatt-hour bought multiplied; standing, demand and export stay.
+    ///
+    /// Meters and readings made under the one hold for the other: buckets do not depend on rates.
     pub fn with_energy_times(&self, factor: f64) -> Self {
         let mut tariff = self.clone();
         for prices in &mut tariff.prices {
@@ -132,7 +137,7 @@ impl Tariff {
                 rate.scale(factor);
             }
             if let Some(hourly) = &mut prices.hourly {
-                hourly.per_kwh.scale(factor);
+                hourly.times *= factor;
             }
         }
         tariff

@@ -3,8 +3,9 @@
 use chrono::{DateTime, Datelike, Timelike, Weekday};
 
 use super::hours::Hours;
-use super::rows::count;
-use crate::problem::{Finding, Place, Severity};
+use super::words::count;
+use super::zone::{Zone, local_hours};
+use crate::problem::{Finding, Severity};
 
 /// An hour that lies this far above or below both neighbours is a fault of the sensor, not weather, K.
 /// Common practice, no source: the air has not been seen to go and come back by 10 K within two hours.
@@ -21,7 +22,7 @@ const FLAT_SWING_K: f64 = 1.0;
 const HOUR_S: i64 = 3600;
 
 /// Sets spikes aside as missing.
-pub(super) fn spikes(place: &Place, hours: &mut Hours, findings: &mut Vec<Finding>) {
+pub(super) fn spikes(hours: &mut Hours, findings: &mut Vec<Finding>) {
     let values = &hours.outdoor_c;
     let spikes: Vec<usize> = (1..values.len().saturating_sub(1))
         .filter(|&i| {
@@ -41,10 +42,8 @@ pub(super) fn spikes(place: &Place, hours: &mut Hours, findings: &mut Vec<Findin
             hours.outdoor_c[i - 1],
             hours.outdoor_c[i + 1]
         );
-        findings.push(
-            Finding::new(Severity::Warning, what, "taken as missing")
-                .at(&place.clone().at_line(hours.line_before(i))),
-        );
+        findings
+            .push(Finding::new(Severity::Warning, what, "taken as missing").at(&hours.place(i)));
     }
     for i in spikes {
         hours.outdoor_c[i] = f64::NAN;
@@ -52,7 +51,7 @@ pub(super) fn spikes(place: &Place, hours: &mut Hours, findings: &mut Vec<Findin
 }
 
 /// Reports sensors that did not move.
-pub(super) fn stuck(place: &Place, hours: &Hours, findings: &mut Vec<Finding>) {
+pub(super) fn stuck(hours: &Hours, findings: &mut Vec<Finding>) {
     let mut from = 0;
     for run in hours.outdoor_c.chunk_by(|a, b| a == b) {
         if run.len() >= STUCK_HOURS {
@@ -67,7 +66,7 @@ pub(super) fn stuck(place: &Place, hours: &Hours, findings: &mut Vec<Finding>) {
                     ),
                     "kept; is the sensor stuck?",
                 )
-                .at(&place.clone().at_line(hours.line_before(from))),
+                .at(&hours.place(from)),
             );
         }
         from += run.len();
@@ -75,7 +74,7 @@ pub(super) fn stuck(place: &Place, hours: &Hours, findings: &mut Vec<Finding>) {
 }
 
 /// Reports holes that look like a civil clock read as if it never changed.
-pub(super) fn clock_artefacts(place: &Place, hours: &Hours, findings: &mut Vec<Finding>) {
+pub(super) fn clock_artefacts(hours: &Hours, findings: &mut Vec<Finding>) {
     if hours.zone_known {
         return;
     }
@@ -102,28 +101,34 @@ pub(super) fn clock_artefacts(place: &Place, hours: &Hours, findings: &mut Vec<F
                     ),
                     "do the stamps follow a civil clock? declare its zone",
                 )
-                .at(&place.clone().at_line(hours.line_before(i))),
+                .at(&hours.place(i)),
             );
         }
     }
 }
 
 /// Reports a mean day whose warmest hour does not fit the declared clock. Needs repaired hours.
-pub(super) fn warmest_hour(place: &Place, hours: &Hours, findings: &mut Vec<Finding>) {
+pub(super) fn warmest_hour(hours: &Hours, findings: &mut Vec<Finding>) {
     // An undeclared clock has its own finding, and UTC says nothing of where the place lies.
-    let utc = hours.zone == super::Zone::utc();
+    let utc = hours.zone == Zone::utc();
     if !hours.zone_known || utc || hours.outdoor_c.len() < 24 * 28 {
         return;
     }
+    let Some(start) = DateTime::from_timestamp(hours.start_s, 0) else {
+        return;
+    };
     let mut sums = [(0.0, 0usize); 24];
-    for (i, c) in hours.outdoor_c.iter().enumerate() {
-        let instant = hours.start_s + i64::try_from(i).unwrap_or(0) * HOUR_S;
-        let Some(instant) = DateTime::from_timestamp(instant, 0) else {
-            continue;
-        };
-        let (sum, n) = &mut sums[hours.zone.local(instant).hour() as usize % 24];
-        *sum += c;
-        *n += 1;
+    for (c, local) in
+        hours
+            .outdoor_c
+            .iter()
+            .zip(local_hours(hours.zone, start, hours.outdoor_c.len()))
+    {
+        let hour = usize::try_from(local.div_euclid(HOUR_S).rem_euclid(24)).unwrap_or(0);
+        if let Some((sum, n)) = sums.get_mut(hour) {
+            *sum += c;
+            *n += 1;
+        }
     }
     let means = sums.map(|(sum, n)| if n > 0 { sum / n as f64 } else { f64::NAN });
     let (mut warmest, mut coldest) = (0, 0);
@@ -145,13 +150,13 @@ pub(super) fn warmest_hour(place: &Place, hours: &Hours, findings: &mut Vec<Find
                 ),
                 "is the time zone right?",
             )
-            .at(place),
+            .at(&hours.whole()),
         );
     }
 }
 
 /// Reports a file that does not hold whole years.
-pub(super) fn whole_years(place: &Place, hours: &Hours, years: f64, findings: &mut Vec<Finding>) {
+pub(super) fn whole_years(hours: &Hours, years: f64, findings: &mut Vec<Finding>) {
     if years >= 1.0 && years.fract() == 0.0 {
         return;
     }
@@ -167,6 +172,6 @@ pub(super) fn whole_years(place: &Place, hours: &Hours, years: f64, findings: &m
             ),
             "annual figures cover only these hours",
         )
-        .at(place),
+        .at(&hours.whole()),
     );
 }

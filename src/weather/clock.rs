@@ -6,7 +6,8 @@ use chrono::{DateTime, Datelike, FixedOffset, NaiveDate};
 
 use super::layout::Layout;
 use super::options::{ReadOptions, StampMarks};
-use super::rows::{Rows, count};
+use super::rows::Rows;
+use super::words::count;
 use super::zone::{Instant, LocalClock, Zone};
 use crate::problem::{Finding, Place, Severity};
 
@@ -18,11 +19,14 @@ const NOMINAL_LEAP_YEAR: i32 = 2024;
 /// Steps looked at to tell how far apart readings are.
 const SAMPLED_STEPS: usize = 2000;
 
+/// Stands for a row that is not used: before any year that a stamp may have.
+pub(super) const ASIDE: i64 = i64::MIN;
+
 /// When each row of a file begins.
 #[derive(Debug, Clone)]
 pub(super) struct Instants {
-    /// Seconds since 1970 in UTC at which the reading's span begins; nothing for a row that is set aside.
-    pub begin_s: Vec<Option<i64>>,
+    /// Seconds since 1970 in UTC at which the reading's span begins; [`ASIDE`] for a row that is set aside.
+    pub begin_s: Vec<i64>,
     /// Seconds between readings.
     pub step_s: i64,
     /// The clock that the file's days follow.
@@ -31,17 +35,19 @@ pub(super) struct Instants {
     pub zone_known: bool,
     /// For a typical year, the year each month comes from, January first.
     pub stitched: Option<[i32; 12]>,
+    /// Whether the file calls itself a typical year.
+    pub called_typical: bool,
 }
 
 /// Resolves all stamps.
 pub(super) fn instants(
     place: &Place,
-    rows: &Rows,
+    rows: &mut Rows,
     layout: &Layout,
     options: &ReadOptions,
     findings: &mut Vec<Finding>,
 ) -> Instants {
-    let mut local: Vec<i64> = rows.stamp.iter().map(|stamp| stamp.local_s).collect();
+    let mut local = std::mem::take(&mut rows.local_s);
     let step_s = step(&local);
     let marks = marks(place, rows, &local, step_s, layout, options, findings);
     if marks == StampMarks::Ending {
@@ -49,48 +55,66 @@ pub(super) fn instants(
         local.iter_mut().for_each(|local| *local -= span);
     }
     let stitched = stitched_years(&local);
-    let mut aside = vec![false; local.len()];
     if let Some(years) = &stitched {
-        place_on_nominal_year(
-            place, rows, &mut local, &mut aside, years, options, findings,
-        );
+        place_on_nominal_year(place, rows, &mut local, years, options, findings);
     }
     let (zone, zone_known) = zone(place, rows, layout, options, findings);
-    let mut clock = LocalClock::new(zone);
-    let mut changes = Changes::default();
-    let mut before = i64::MIN;
-    let mut begin_s = Vec::with_capacity(local.len());
-    for (i, (&local, stamp)) in local.iter().zip(&rows.stamp).enumerate() {
-        let instant = match stamp.offset_s {
-            // A nominal year has no offset of its own days: the zone holds.
-            Some(offset) if stitched.is_none() => Some(local - i64::from(offset)),
-            _ => match clock.instant(local) {
-                Instant::Once(instant) => Some(instant),
-                Instant::Twice(first, second) => {
-                    // The first pass, unless the readings have already been there.
-                    let instant = if first > before { first } else { second };
-                    changes.doubled(local, instant == second, rows.line[i]);
-                    Some(instant)
-                }
-                Instant::Never => {
-                    changes.skipped(local, rows.line[i]);
-                    None
-                }
-            },
-        };
-        if let Some(instant) = instant {
-            before = instant;
-        }
-        begin_s.push(instant.filter(|_| !aside[i]));
-    }
-    changes.report(place, &zone, findings);
+    // A nominal year has no offset of its own days: there the zone holds.
+    let own_offsets = stitched.is_none();
+    let begin_s = begin(place, rows, local, own_offsets, zone, findings);
     Instants {
         begin_s,
         step_s,
         zone,
         zone_known,
         stitched,
+        called_typical: layout.typical,
     }
+}
+
+/// Local times to instants, in place.
+fn begin(
+    place: &Place,
+    rows: &Rows,
+    mut local: Vec<i64>,
+    own_offsets: bool,
+    zone: Zone,
+    findings: &mut Vec<Finding>,
+) -> Vec<i64> {
+    let mut clock = LocalClock::new(zone);
+    let mut changes = Changes::default();
+    let mut before = ASIDE;
+    for (row, time) in local.iter_mut().enumerate() {
+        if *time == ASIDE {
+            continue;
+        }
+        let offset = rows
+            .offset_s
+            .get(row)
+            .copied()
+            .flatten()
+            .filter(|_| own_offsets);
+        let line = || rows.line.get(row).copied().unwrap_or(0);
+        *time = match offset {
+            Some(offset) => *time - i64::from(offset),
+            None => match clock.instant(*time) {
+                Instant::Once(instant) => instant,
+                Instant::Twice(first, second) => {
+                    // The first pass, unless the readings have already been there.
+                    let instant = if first > before { first } else { second };
+                    changes.doubled(*time, instant == second, line());
+                    instant
+                }
+                Instant::Never => {
+                    changes.skipped(*time, line());
+                    ASIDE
+                }
+            },
+        };
+        before = before.max(*time);
+    }
+    changes.report(place, &zone, findings);
+    local
 }
 
 /// The usual distance between readings, an hour when there is none.
@@ -132,7 +156,7 @@ fn marks(
         place.line = line.and_then(|line| usize::try_from(line).ok());
         findings.push(Finding::new(severity, what, done).at(&place));
     };
-    if let Some(i) = rows.stamp.iter().position(|stamp| stamp.twenty_four) {
+    if let Some(i) = rows.twenty_four {
         note(
             Severity::Note,
             rows.line.get(i).copied(),
@@ -175,7 +199,7 @@ fn zone(
         return (zone, true);
     }
     // The offset of standard time is the least of those that occur.
-    let least = rows.stamp.iter().filter_map(|stamp| stamp.offset_s).min();
+    let least = rows.offset_s.iter().flatten().copied().min();
     if let Some(offset) = least.and_then(FixedOffset::east_opt) {
         return (Zone::Fixed(offset), true);
     }
@@ -246,7 +270,6 @@ fn place_on_nominal_year(
     place: &Place,
     rows: &Rows,
     local: &mut [i64],
-    aside: &mut [bool],
     years: &[i32; 12],
     options: &ReadOptions,
     findings: &mut Vec<Finding>,
@@ -260,7 +283,8 @@ fn place_on_nominal_year(
     } else {
         NOMINAL_YEAR
     });
-    for (i, at) in local.iter_mut().enumerate() {
+    let mut dropped = 0;
+    for at in local.iter_mut() {
         let Some(date) = DateTime::from_timestamp(*at, 0).map(|t| t.date_naive()) else {
             continue;
         };
@@ -271,8 +295,12 @@ fn place_on_nominal_year(
         ) else {
             continue;
         };
-        *at += to - from;
-        aside[i] = month0 == 1 && date.day() == 29 && !is_leap(nominal);
+        if month0 == 1 && date.day() == 29 && !is_leap(nominal) {
+            *at = ASIDE;
+            dropped += 1;
+        } else {
+            *at += to - from;
+        }
     }
     let mut sources: Vec<_> = years.to_vec();
     sources.sort_unstable();
@@ -296,7 +324,6 @@ fn place_on_nominal_year(
         )
         .at(&top),
     );
-    let dropped = aside.iter().filter(|&&aside| aside).count();
     if dropped > 0 {
         findings.push(
             Finding::new(

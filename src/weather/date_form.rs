@@ -2,9 +2,12 @@
 
 use super::columns::{Columns, TimeColumns};
 use super::options::ReadOptions;
+use super::row_reader::Fields;
 use super::time_stamp::{DateForm, Stamp, stamp, stamp_of_parts, stamp_of_two};
 
-/// Rows looked at: 13 days of ten-minute readings hold a day above 12, which settles day-first or month-first.
+/// Rows that settle every form but the order of day and month.
+pub(super) const FIRST_ROWS: usize = 200;
+/// Rows looked at for that: 13 days of ten-minute readings hold a day above 12, which settles day-first or month-first.
 pub(super) const SAMPLED_ROWS: usize = 5000;
 
 /// Forms tried, the least ambiguous first.
@@ -16,24 +19,6 @@ const FORMS: [DateForm; 6] = [
     DateForm::EpochSeconds,
     DateForm::EpochMilliseconds,
 ];
-
-/// Fields of a row, as bytes.
-pub(super) trait Fields {
-    /// The field at a position, if the row is that long.
-    fn field(&self, at: usize) -> Option<&[u8]>;
-}
-
-impl Fields for csv::ByteRecord {
-    fn field(&self, at: usize) -> Option<&[u8]> {
-        self.get(at)
-    }
-}
-
-impl Fields for Vec<String> {
-    fn field(&self, at: usize) -> Option<&[u8]> {
-        self.get(at).map(|field| field.as_bytes())
-    }
-}
 
 /// How the time of a row is read.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -101,6 +86,11 @@ impl TimeForm {
         }
     }
 
+    /// Whether the form has its year last, so that more rows can tell day from month.
+    pub(super) fn day_and_month_may_be_swapped(&self) -> bool {
+        matches!(self.form, DateForm::DayFirst | DateForm::MonthFirst)
+    }
+
     /// The form in words.
     pub(super) fn words(&self) -> &'static str {
         match self.columns {
@@ -111,7 +101,7 @@ impl TimeForm {
 }
 
 /// What the sample says.
-#[derive(Debug, Clone, PartialEq, Eq)]
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(super) struct Decision {
     pub form: TimeForm,
     /// Whether day-first was taken although the readings allow month-first as well.
@@ -156,10 +146,7 @@ pub(super) fn decide(
         }
     }
     let (_, mut decision) = best?;
-    if matches!(
-        decision.form.form,
-        DateForm::DayFirst | DateForm::MonthFirst
-    ) {
+    if decision.form.day_and_month_may_be_swapped() {
         let with = |form| TimeForm {
             form,
             ..decision.form

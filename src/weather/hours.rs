@@ -1,10 +1,14 @@
 //! Readings onto whole hours: sorted, duplicates dropped, finer ones averaged, coarser ones joined by straight lines.
 
+use std::sync::Arc;
+
 use chrono::DateTime;
 
-use super::clock::Instants;
-use super::rows::{Rows, count};
+use super::clock::{ASIDE, Instants};
+use super::order::{Times, minutes};
+use super::rows::Rows;
 use super::values::Values;
+use super::words::count;
 use super::zone::Zone;
 use crate::problem::{Finding, Place, Problem, Severity};
 
@@ -15,12 +19,12 @@ const COARSEST_STEP_S: i64 = 6 * HOUR_S;
 const LEAST_SHARE: f64 = 0.5;
 /// Readings may cover at least one in this many hours, else the stamps are wrong.
 const SPARSEST: i64 = 20;
-/// Two readings of one instant further apart than this contradict each other, K.
-const SAME_K: f64 = 0.05;
 
 /// Hours in a row, still with holes. Missing is `NaN`; a line is 0 where no row fell into the hour.
 #[derive(Debug, Clone)]
 pub(super) struct Hours {
+    /// The files, each with its first hour.
+    pub files: Vec<(usize, Arc<str>)>,
     pub start_s: i64,
     pub outdoor_c: Vec<f64>,
     pub humidity: Option<Vec<f64>>,
@@ -31,6 +35,8 @@ pub(super) struct Hours {
     pub zone: Zone,
     pub zone_known: bool,
     pub stitched: Option<[i32; 12]>,
+    /// Whether the file calls itself a typical year.
+    pub called_typical: bool,
     /// Hours in which an instant occurs more than once.
     pub duplicate_hours: usize,
     /// Hours made by joining coarser readings.
@@ -46,16 +52,34 @@ impl Hours {
         )
     }
 
-    /// The line of the hour, or of the last one before it that has any.
-    pub(super) fn line_before(&self, i: usize) -> usize {
+    /// The file and line of the hour, or of the last one before it that has any.
+    pub(super) fn place(&self, i: usize) -> Place {
         let seen = self.line.get(..=i).unwrap_or(&self.line);
-        let line = seen
+        let (at, line) = seen
             .iter()
+            .enumerate()
             .rev()
-            .find(|&&line| line > 0)
-            .copied()
-            .unwrap_or(1);
-        usize::try_from(line).unwrap_or(1)
+            .find(|&(_, &line)| line > 0)
+            .map_or((0, 1), |(at, &line)| (at, line));
+        let file = self.files.iter().rev().find(|(from, _)| *from <= at);
+        Place {
+            file: file.map(|(_, name)| Arc::clone(name)),
+            line: usize::try_from(line).ok(),
+            ..Place::default()
+        }
+    }
+
+    /// The place of the whole series: its first file.
+    pub(super) fn whole(&self) -> Place {
+        Place {
+            file: self.files.first().map(|(_, name)| Arc::clone(name)),
+            ..Place::default()
+        }
+    }
+
+    /// One past the last hour, seconds since 1970.
+    pub(super) fn end_s(&self) -> i64 {
+        self.start_s + i64::try_from(self.outdoor_c.len()).unwrap_or(0) * HOUR_S
     }
 }
 
@@ -67,24 +91,26 @@ pub(super) fn local(zone: Zone, instant_s: i64) -> String {
     }
 }
 
+/// The columns of a file on hours in a row.
+struct Placed {
+    start_s: i64,
+    values: Values,
+    line: Vec<u32>,
+    duplicate_hours: usize,
+}
+
 /// Puts the rows of a file on hours.
 ///
 /// # Errors
 /// Readings that are too far apart, or stamps that are spread over far more time than they can cover.
 pub(super) fn hours(
     place: &Place,
-    rows: &Rows,
-    mut values: Values,
+    rows: Rows,
+    values: Values,
     instants: Instants,
     findings: &mut Vec<Finding>,
 ) -> Result<Hours, Problem> {
-    let Instants {
-        begin_s,
-        step_s,
-        zone,
-        zone_known,
-        stitched,
-    } = instants;
+    let step_s = instants.step_s;
     if step_s > COARSEST_STEP_S {
         return Err(Problem::new(
             place.clone(),
@@ -96,78 +122,42 @@ pub(super) fn hours(
             "use an hourly file",
         ));
     }
-    let order = sorted(place, rows, &begin_s, zone, findings);
-    let at = |row: u32| begin_s.get(row as usize).copied().flatten().unwrap_or(0);
-    let (Some(first), Some(last)) = (
-        order.first().map(|&row| at(row)),
-        order.last().map(|&row| at(row)),
-    ) else {
-        return Err(Problem::new(
-            place.clone(),
-            "no row has a usable time",
-            "hourly readings",
-            "",
-        ));
-    };
-    let shift = off_the_hour(place, &order, at, zone, step_s, findings);
-    let phase = DateTime::from_timestamp(first, 0)
-        .map_or(0, |t| i64::from(zone.offset_s(t)).rem_euclid(HOUR_S));
-    let hour_of = |begin: i64| (begin + shift + phase).div_euclid(HOUR_S);
-    let number = hour_of(last) - hour_of(first) + 1;
-    if number > SPARSEST * i64::try_from(order.len()).unwrap_or(i64::MAX) + 240 {
-        return Err(Problem::new(
-            place.clone(),
-            format!(
-                "{} are spread from {} to {}",
-                count(order.len(), "reading"),
-                local(zone, first),
-                local(zone, last)
-            ),
-            "readings in a row",
-            "is the order of day and month right? is a stamp mistyped?",
-        ));
-    }
-    let number = usize::try_from(number).unwrap_or(0);
-    let base = hour_of(first);
-    let index = |row: u32| usize::try_from(hour_of(at(row)) - base).unwrap_or(0);
-    let (order, duplicate_hours) = unique(
-        place,
-        rows,
-        order,
-        at,
-        &index,
-        &values.outdoor_c,
-        zone,
-        findings,
-    );
-
-    let expected = if step_s < HOUR_S {
-        HOUR_S as f64 / step_s as f64
+    let placed = if is_whole(&instants) {
+        Placed {
+            start_s: instants.begin_s.first().copied().unwrap_or(0),
+            values,
+            line: rows.line,
+            duplicate_hours: 0,
+        }
     } else {
-        1.0
+        place_rows(place, &rows, &values, &instants, findings)?
     };
-    let fill = |values: &mut Vec<f64>| averaged(&order, &index, values, number, expected);
+    let Placed {
+        start_s,
+        values,
+        line,
+        duplicate_hours,
+    } = placed;
     let mut hours = Hours {
-        start_s: base * HOUR_S - phase,
-        outdoor_c: fill(&mut values.outdoor_c),
-        humidity: values.humidity.as_mut().map(fill),
-        dew_point_c: values.dew_point_c.as_mut().map(fill),
-        global_w_per_m2: values.global_w_per_m2.as_mut().map(fill),
-        wind_m_per_s: values.wind_m_per_s.as_mut().map(fill),
-        line: vec![0; number],
-        zone,
-        zone_known,
-        stitched,
+        files: place
+            .file
+            .iter()
+            .map(|name| (0, Arc::clone(name)))
+            .collect(),
+        start_s,
+        outdoor_c: values.outdoor_c,
+        humidity: values.humidity,
+        dew_point_c: values.dew_point_c,
+        global_w_per_m2: values.global_w_per_m2,
+        wind_m_per_s: values.wind_m_per_s,
+        line,
+        zone: instants.zone,
+        zone_known: instants.zone_known,
+        stitched: instants.stitched,
+        called_typical: instants.called_typical,
         duplicate_hours,
         joined_hours: 0,
     };
-    for &row in order.iter().rev() {
-        if let (Some(line), Some(&of_row)) =
-            (hours.line.get_mut(index(row)), rows.line.get(row as usize))
-        {
-            *line = of_row;
-        }
-    }
     if step_s < HOUR_S {
         findings.push(
             Finding::new(
@@ -208,212 +198,119 @@ pub(super) fn hours(
     Ok(hours)
 }
 
+/// Whether the rows are hours in a row already, each on the hour, as in most files.
+fn is_whole(instants: &Instants) -> bool {
+    let begins = &instants.begin_s;
+    let on_the_hour = begins
+        .first()
+        .and_then(|&first| DateTime::from_timestamp(first, 0))
+        .is_some_and(|first| {
+            (first.timestamp() + i64::from(instants.zone.offset_s(first))).rem_euclid(HOUR_S) == 0
+        });
+    on_the_hour
+        && begins
+            .windows(2)
+            .all(|w| w[0] != ASIDE && w[1] == w[0] + HOUR_S)
+}
+
+/// Sorts the rows, drops what is there twice, and averages what falls into one hour.
+fn place_rows(
+    place: &Place,
+    rows: &Rows,
+    values: &Values,
+    instants: &Instants,
+    findings: &mut Vec<Finding>,
+) -> Result<Placed, Problem> {
+    let step_s = instants.step_s;
+    let times = Times {
+        place,
+        line: &rows.line,
+        begin_s: &instants.begin_s,
+        zone: instants.zone,
+    };
+    let order = times.sorted(findings);
+    let (Some(&first), Some(&last)) = (order.first(), order.last()) else {
+        return Err(Problem::new(
+            place.clone(),
+            "no row has a usable time",
+            "hourly readings",
+            "",
+        ));
+    };
+    let shift = times.shift_to_hours(&order, step_s, findings) + times.phase(first);
+    let hour_of = |row: u32| (times.at(row) + shift).div_euclid(HOUR_S);
+    let base = hour_of(first);
+    let number = hour_of(last) - base + 1;
+    if number > SPARSEST * i64::try_from(order.len()).unwrap_or(i64::MAX) + 240 {
+        return Err(Problem::new(
+            place.clone(),
+            format!(
+                "{} are spread from {} to {}",
+                count(order.len(), "reading"),
+                times.text(first),
+                times.text(last)
+            ),
+            "readings in a row",
+            "is the order of day and month right? is a stamp mistyped?",
+        ));
+    }
+    let number = usize::try_from(number).unwrap_or(0);
+    let (order, doubled) = times.unique(order, &values.outdoor_c, findings);
+    let hour: Vec<u32> = order
+        .iter()
+        .map(|&row| u32::try_from(hour_of(row) - base).unwrap_or(0))
+        .collect();
+    let mut duplicates: Vec<i64> = doubled.into_iter().map(hour_of).collect();
+    duplicates.dedup();
+    let expected = if step_s < HOUR_S {
+        HOUR_S as f64 / step_s as f64
+    } else {
+        1.0
+    };
+    let mean = |values: &Vec<f64>| averaged(&order, &hour, values, number, expected);
+    let mut line = vec![0; number];
+    for (&row, &hour) in order.iter().zip(&hour).rev() {
+        if let (Some(line), Some(&of_row)) =
+            (line.get_mut(hour as usize), rows.line.get(row as usize))
+        {
+            *line = of_row;
+        }
+    }
+    Ok(Placed {
+        start_s: base * HOUR_S - times.phase(first),
+        values: Values {
+            outdoor_c: mean(&values.outdoor_c),
+            humidity: values.humidity.as_ref().map(mean),
+            dew_point_c: values.dew_point_c.as_ref().map(mean),
+            global_w_per_m2: values.global_w_per_m2.as_ref().map(mean),
+            wind_m_per_s: values.wind_m_per_s.as_ref().map(mean),
+        },
+        line,
+        duplicate_hours: duplicates.len(),
+    })
+}
+
 fn present(values: &[f64]) -> usize {
     values.iter().filter(|value| !value.is_nan()).count()
 }
 
-fn minutes(step_s: i64) -> String {
-    if step_s % 60 == 0 {
-        count(usize::try_from(step_s / 60).unwrap_or(0), "minute")
-    } else {
-        count(usize::try_from(step_s).unwrap_or(0), "second")
-    }
-}
-
-/// The rows in order of time; disorder is reported in runs.
-fn sorted(
-    place: &Place,
-    rows: &Rows,
-    begin_s: &[Option<i64>],
-    zone: Zone,
-    findings: &mut Vec<Finding>,
-) -> Vec<u32> {
-    let key = |row: u32| {
-        begin_s
-            .get(row as usize)
-            .copied()
-            .flatten()
-            .unwrap_or(i64::MIN)
-    };
-    let mut order: Vec<u32> = (0..u32::try_from(begin_s.len()).unwrap_or(u32::MAX))
-        .filter(|&row| begin_s.get(row as usize).is_some_and(Option::is_some))
-        .collect();
-    let back: Vec<u32> = order
-        .windows(2)
-        .filter(|w| key(w[1]) < key(w[0]))
-        .map(|w| w[1])
-        .collect();
-    let Some(&first) = back.first() else {
-        return order;
-    };
-    let line = |row: u32| {
-        rows.line
-            .get(row as usize)
-            .and_then(|&line| usize::try_from(line).ok())
-            .unwrap_or(0)
-    };
-    findings.push(
-        Finding::new(
-            Severity::Warning,
-            format!(
-                "the times step back {}, first to {}",
-                if back.len() == 1 {
-                    "once".to_owned()
-                } else {
-                    format!("{} times", back.len())
-                },
-                local(zone, key(first))
-            ),
-            "the rows are sorted by time",
-        )
-        .at(&place.clone().at_line(line(first))),
-    );
-    for &row in back.iter().skip(1) {
-        findings.push(
-            Finding::new(
-                Severity::Note,
-                format!("the time steps back to {}", local(zone, key(row))),
-                "sorted by time",
-            )
-            .at(&place.clone().at_line(line(row))),
-        );
-    }
-    order.sort_by_key(|&row| key(row));
-    order
-}
-
-/// Seconds by which stamps that lie off the hour are moved so that each falls into its own hour.
-fn off_the_hour(
-    place: &Place,
-    order: &[u32],
-    at: impl Fn(u32) -> i64,
-    zone: Zone,
-    step_s: i64,
-    findings: &mut Vec<Finding>,
-) -> i64 {
-    if step_s != HOUR_S {
-        return 0;
-    }
-    let Some(&first) = order.first() else {
-        return 0;
-    };
-    let phase = DateTime::from_timestamp(at(first), 0)
-        .map_or(0, |t| i64::from(zone.offset_s(t)).rem_euclid(HOUR_S));
-    let past = |row: u32| (at(row) + phase).rem_euclid(HOUR_S);
-    let usual = past(first);
-    let alike = order.iter().filter(|&&row| past(row) == usual).count();
-    if usual == 0 || alike * 2 < order.len() {
-        return 0;
-    }
-    let late = usual > HOUR_S / 2;
-    findings.push(
-        Finding::new(
-            Severity::Note,
-            format!("the stamps lie {} past the hour", minutes(usual)),
-            format!(
-                "each reading is taken for the hour that {}",
-                if late { "follows" } else { "holds it" }
-            ),
-        )
-        .at(place),
-    );
-    if late { HOUR_S - usual } else { 0 }
-}
-
-/// Keeps one row of each instant, the first that has a temperature.
-#[expect(
-    clippy::too_many_arguments,
-    reason = "one pass over one table; a struct would only rename the arguments"
-)]
-fn unique(
-    place: &Place,
-    rows: &Rows,
-    order: Vec<u32>,
-    at: impl Fn(u32) -> i64,
-    index: &impl Fn(u32) -> usize,
-    outdoor_c: &[f64],
-    zone: Zone,
-    findings: &mut Vec<Finding>,
-) -> (Vec<u32>, usize) {
-    if order.windows(2).all(|w| at(w[0]) != at(w[1])) {
-        return (order, 0);
-    }
-    let reading = |row: u32| outdoor_c.get(row as usize).copied().unwrap_or(f64::NAN);
-    let line = |row: u32| {
-        rows.line
-            .get(row as usize)
-            .and_then(|&line| usize::try_from(line).ok())
-            .unwrap_or(0)
-    };
-    let mut kept = Vec::with_capacity(order.len());
-    let mut doubled: Vec<usize> = Vec::new();
-    for group in order.chunk_by(|&a, &b| at(a) == at(b)) {
-        let keep = group
-            .iter()
-            .copied()
-            .find(|&row| !reading(row).is_nan())
-            .unwrap_or(group[0]);
-        kept.push(keep);
-        if group.len() == 1 {
-            continue;
-        }
-        doubled.push(index(keep));
-        let clash = group
-            .iter()
-            .find(|&&row| (reading(row) - reading(keep)).abs() > SAME_K);
-        let again = group
-            .iter()
-            .copied()
-            .find(|&row| row != keep)
-            .unwrap_or(keep);
-        let (severity, what) = match clash {
-            Some(&row) => (
-                Severity::Warning,
-                format!(
-                    "{} is there again with {:.1} °C instead of {:.1} °C",
-                    local(zone, at(keep)),
-                    reading(row),
-                    reading(keep)
-                ),
-            ),
-            None => (
-                Severity::Note,
-                format!("{} is there again", local(zone, at(keep))),
-            ),
-        };
-        findings.push(
-            Finding::new(severity, what, format!("line {} is kept", line(keep)))
-                .at(&place.clone().at_line(line(clash.copied().unwrap_or(again)))),
-        );
-    }
-    doubled.dedup();
-    (kept, doubled.len())
-}
-
 /// Means by hour; the rows are in order of time.
-fn averaged(
-    order: &[u32],
-    index: &impl Fn(u32) -> usize,
-    values: &mut [f64],
-    number: usize,
-    expected: f64,
-) -> Vec<f64> {
+fn averaged(order: &[u32], hour: &[u32], values: &[f64], number: usize, expected: f64) -> Vec<f64> {
     let mut hours = vec![f64::NAN; number];
-    let mut in_hour: (usize, f64, usize) = (0, 0.0, 0);
-    let mut put = |(hour, sum, n): (usize, f64, usize)| {
+    let mut in_hour: (u32, f64, u32) = (0, 0.0, 0);
+    let mut put = |(hour, sum, n): (u32, f64, u32)| {
         if n > 0
-            && n as f64 >= expected * LEAST_SHARE
-            && let Some(slot) = hours.get_mut(hour)
+            && f64::from(n) >= expected * LEAST_SHARE
+            && let Some(slot) = hours.get_mut(hour as usize)
         {
-            *slot = sum / n as f64;
+            *slot = sum / f64::from(n);
         }
     };
-    for &row in order {
+    for (&row, &hour) in order.iter().zip(hour) {
         let value = values.get(row as usize).copied().unwrap_or(f64::NAN);
         if value.is_nan() {
             continue;
         }
-        let hour = index(row);
         if hour != in_hour.0 {
             put(in_hour);
             in_hour = (hour, 0.0, 0);

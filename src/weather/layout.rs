@@ -5,6 +5,7 @@ use std::sync::Arc;
 use super::columns::{self, Columns, TimeColumns, Unclear, ValueColumn};
 use super::date_form;
 use super::options::{Column, ReadOptions};
+use super::words::shorten;
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
 
 /// How many lines from the top may come before the readings, comments aside.
@@ -27,6 +28,25 @@ pub(super) struct Layout {
     /// Fields a row has.
     pub fields: usize,
     pub columns: Columns,
+    /// Whether a line above the readings calls them a typical or reference year.
+    pub typical: bool,
+}
+
+#[cfg(test)]
+impl Layout {
+    /// A layout of two columns, time and temperature.
+    pub(super) fn for_test(delimiter: u8) -> Self {
+        let headings = vec!["time".to_owned(), "temperature".to_owned()];
+        Self {
+            delimiter,
+            start: 0,
+            line: 1,
+            fields: 2,
+            columns: columns::settle(&headings, &Default::default()).unwrap(),
+            headings,
+            typical: false,
+        }
+    }
 }
 
 /// One line that is neither blank nor a remark.
@@ -95,6 +115,7 @@ pub(super) fn layout(
             headings,
             fields,
             columns,
+            typical: calls_itself_typical(text.get(..first.start).unwrap_or_default()),
         })
     };
     let mut layout = if all_numbered(options) {
@@ -296,7 +317,7 @@ fn sniff(lines: &[Line]) -> Option<u8> {
     let score = |delimiter: u8| {
         let counts: Vec<usize> = lines
             .iter()
-            .map(|line| split(line.text, delimiter).len())
+            .map(|line| fields(line.text, delimiter))
             .collect();
         let most = counts
             .iter()
@@ -313,8 +334,36 @@ fn sniff(lines: &[Line]) -> Option<u8> {
     (score(*best) > 0).then_some(*best)
 }
 
+/// Whether the text above the readings says that the year is a typical one.
+fn calls_itself_typical(above: &str) -> bool {
+    let above = above.to_lowercase();
+    [
+        "typical year",
+        "typical meteorological year",
+        "reference year",
+    ]
+    .iter()
+    .any(|name| above.contains(name))
+}
+
+/// How many fields a delimiter would make of a line, quotes respected.
+fn fields(line: &str, delimiter: u8) -> usize {
+    let mut quoted = false;
+    let delimiters = line.bytes().filter(|&byte| {
+        quoted ^= byte == b'"';
+        byte == delimiter && !quoted
+    });
+    delimiters.count() + 1
+}
+
 /// Splits one line, quotes respected.
 fn split(line: &str, delimiter: u8) -> Vec<String> {
+    if !line.contains('"') {
+        return line
+            .split(char::from(delimiter))
+            .map(|field| field.trim().to_owned())
+            .collect();
+    }
     let mut reader = csv::ReaderBuilder::new()
         .delimiter(delimiter)
         .has_headers(false)
@@ -325,14 +374,4 @@ fn split(line: &str, delimiter: u8) -> Vec<String> {
         Ok(true) => record.iter().map(|field| field.trim().to_owned()).collect(),
         _ => Vec::new(),
     }
-}
-
-/// A text short enough for a message.
-pub(super) fn shorten(text: &str) -> String {
-    const MOST: usize = 120;
-    if text.chars().count() <= MOST {
-        return text.to_owned();
-    }
-    let start: String = text.chars().take(MOST).collect();
-    format!("{start}…")
 }

@@ -5,32 +5,49 @@
 //! [`hours`] makes hours of them, [`check`] and [`repair`] see to faults and gaps. What comes out is a complete
 //! [`Weather`]; every oddity met on the way is a finding with its line.
 
+mod adjust;
 mod bytes;
 mod check;
 mod clock;
 mod columns;
 mod date_form;
+mod degree_days;
+mod describe;
+mod distribution;
+mod faults;
 mod heading;
 mod hours;
+mod humidity;
 mod layout;
 mod number;
 mod options;
+mod order;
+mod pass;
 mod read;
 mod repair;
+mod row_reader;
 mod rows;
 mod time_stamp;
+mod typical_year;
 mod values;
+mod words;
+mod write;
 mod zone;
 
 use std::ops::Range;
 
 use chrono::{DateTime, Datelike, Duration, Months, NaiveDate, Utc};
 
+pub use adjust::{Adjusted, Adjustment};
+pub use degree_days::{Rule, degree_days};
+pub use describe::{Description, Spell, YearFigures, coldest_days, describe};
 pub use options::{
     Column, ColumnChoice, DateOrder, MAX_EXPANDED_BYTES, PartColumns, ReadOptions, RepairPolicy,
     StampMarks, TemperatureUnit,
 };
-pub use read::{read, read_bytes};
+pub use read::{read, read_all, read_bytes};
+pub use typical_year::{TypicalYear, typical_year};
+pub use write::to_csv;
 pub use zone::Zone;
 
 use crate::calendar::HourAxis;
@@ -122,16 +139,27 @@ impl Weather {
 
     /// The days of the series on the file's own clock, each with its hours; the first and last may be short.
     pub fn days(&self) -> Vec<(NaiveDate, Range<usize>)> {
-        let mut days: Vec<(NaiveDate, Range<usize>)> = Vec::with_capacity(self.axis.hours / 24 + 2);
+        const DAY_S: i64 = 86_400;
+        let local_s = |i: usize| {
+            let instant = self.axis.at(i);
+            instant.timestamp() + i64::from(self.zone.offset_s(instant))
+        };
+        let mut days = Vec::with_capacity(self.axis.hours / 24 + 2);
         let mut from = 0;
         while from < self.axis.hours {
-            let date = self.zone.local(self.axis.at(from)).date();
-            // A civil day ends 23 to 25 hours after it begins; a short first day earlier.
-            let mut to = (from + 1..=from + 26)
-                .find(|&i| self.zone.local(self.axis.at(i)).date() != date)
-                .unwrap_or(from + 24);
-            to = to.min(self.axis.hours);
-            days.push((date, from..to));
+            let begin = local_s(from);
+            let day = begin.div_euclid(DAY_S);
+            // Where no clock changes the next day begins after the hours that are left; else it is looked for.
+            let left = ((day + 1) * DAY_S - begin + 3599) / 3600;
+            let mut to = from + usize::try_from(left).unwrap_or(24);
+            while to > from + 1 && local_s(to - 1).div_euclid(DAY_S) != day {
+                to -= 1;
+            }
+            while local_s(to).div_euclid(DAY_S) == day {
+                to += 1;
+            }
+            let date = DateTime::from_timestamp(day * DAY_S, 0).map(|local| local.date_naive());
+            days.push((date.unwrap_or_default(), from..to.min(self.axis.hours)));
             from = to;
         }
         days

@@ -2,8 +2,8 @@
 
 use super::hours::Hours;
 use super::options::RepairPolicy;
-use super::rows::count;
-use crate::problem::{Finding, Place, Problem, Problems, Severity};
+use super::words::count;
+use crate::problem::{Finding, Problem, Problems, Severity};
 
 const HOURS_A_DAY: usize = 24;
 /// A column that is not needed is dropped when more than this share of it is missing.
@@ -21,7 +21,6 @@ pub(super) struct Repaired {
 /// # Errors
 /// Every gap that is longer than the policy allows.
 pub(super) fn repair(
-    place: &Place,
     hours: &mut Hours,
     policy: RepairPolicy,
     findings: &mut Vec<Finding>,
@@ -30,7 +29,7 @@ pub(super) fn repair(
     let mut problems = Problems::new();
     for &(from, to) in &gaps {
         let length = to - from;
-        let at = place.clone().at_line(hours.line_before(from));
+        let at = hours.place(from);
         let what = if length == 1 {
             format!("1 hour without a temperature, {}", hours.local(from))
         } else {
@@ -65,6 +64,7 @@ pub(super) fn repair(
     problems.or(())?;
     fill(&mut hours.outdoor_c, &gaps, policy);
     let total = hours.outdoor_c.len();
+    let whole = hours.whole();
     for (what, values) in [
         ("relative humidity", &mut hours.humidity),
         ("dew point", &mut hours.dew_point_c),
@@ -82,7 +82,7 @@ pub(super) fn repair(
                     format!("{what} is missing in {missing} of {}", count(total, "hour")),
                     "the column is not used",
                 )
-                .at(place),
+                .at(&whole),
             );
             *values = None;
         } else if missing > 0 {
@@ -94,7 +94,7 @@ pub(super) fn repair(
                     format!("{what} is missing in {}", count(missing, "hour")),
                     "filled like the temperature",
                 )
-                .at(place),
+                .at(&whole),
             );
         }
     }
@@ -128,6 +128,9 @@ fn by_line(values: &[f64], from: usize, to: usize, policy: RepairPolicy) -> bool
 }
 
 fn fill(values: &mut [f64], gaps: &[(usize, usize)], policy: RepairPolicy) {
+    if gaps.is_empty() {
+        return;
+    }
     let before = values.to_vec();
     for &(from, to) in gaps {
         if by_line(&before, from, to, policy) {

@@ -3,11 +3,13 @@
 use std::fmt;
 use std::str::FromStr;
 
-use chrono::{DateTime, FixedOffset, LocalResult, NaiveDateTime, Offset, TimeZone, Utc};
+use chrono::{DateTime, Duration, FixedOffset, LocalResult, NaiveDateTime, Offset, TimeZone, Utc};
 use chrono_tz::Tz;
 
 /// Seconds in a day.
 const DAY_S: i64 = 86_400;
+const HOUR_S: i64 = 3600;
+const HOURS_A_DAY: usize = 24;
 
 /// A fixed offset from UTC, or a civil clock that changes twice a year.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -40,7 +42,7 @@ impl Zone {
 
     /// The local date and time at an instant.
     pub fn local(&self, instant: DateTime<Utc>) -> NaiveDateTime {
-        instant.naive_utc() + chrono::Duration::seconds(i64::from(self.offset_s(instant)))
+        instant.naive_utc() + Duration::seconds(i64::from(self.offset_s(instant)))
     }
 }
 
@@ -160,6 +162,28 @@ impl LocalClock {
             LocalResult::None => Instant::Never,
         }
     }
+}
+
+/// The local time, as seconds since 1970 on the same clock, at which each of consecutive hours begins.
+///
+/// Offsets are looked up once a day; only on the days of a clock change hour by hour.
+pub(super) fn local_hours(zone: Zone, start: DateTime<Utc>, hours: usize) -> Vec<i64> {
+    let instant = |i: usize| start + Duration::hours(i64::try_from(i).unwrap_or(0));
+    let offset = |i: usize| i64::from(zone.offset_s(instant(i)));
+    let mut local = Vec::with_capacity(hours);
+    let mut before = offset(0);
+    let mut begin = start.timestamp();
+    for from in (0..hours).step_by(HOURS_A_DAY) {
+        let to = (from + HOURS_A_DAY).min(hours);
+        let after = offset(to);
+        for i in from..to {
+            let of_hour = if before == after { before } else { offset(i) };
+            local.push(begin + of_hour);
+            begin += HOUR_S;
+        }
+        before = after;
+    }
+    local
 }
 
 /// The offsets, seconds east, that a local time may have.

@@ -30,4 +30,3 @@ impl Sink for Ledger {
         self.rows.push(*row);
     }
 }
-

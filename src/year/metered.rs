@@ -29,8 +29,12 @@ impl<'a> Metered<'a> {
 
 impl Sink for Metered<'_> {
     fn take(&mut self, hour: usize, row: &Row) {
-        let bought = |import_kwh| Flows { import_kwh, export_kwh: 0.0 };
-        self.electricity.record(self.electricity_meter, hour, bought(row.electricity_kwh()));
+        let bought = |import_kwh| Flows {
+            import_kwh,
+            export_kwh: 0.0,
+        };
+        self.electricity
+            .record(self.electricity_meter, hour, bought(row.electricity_kwh()));
         if let (Some(meter), Some(reading)) = (self.fuel_meter, &mut self.fuel) {
             reading.record(meter, hour, bought(row.fuel_kwh));
         }

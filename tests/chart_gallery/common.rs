@@ -9,8 +9,8 @@ fn folder() -> PathBuf {
     folder
 }
 
-/// Checks what holds for every picture; `name` is the file it is left under.
-pub fn check(name: &str, picture: &Picture) {
+/// Checks labels, SVG and alt text; gives back the SVG.
+pub fn check_svg(name: &str, picture: &Picture) -> String {
     for (i, a) in picture.labels().iter().enumerate() {
         assert!(
             picture.canvas().contains(&a.area),
@@ -47,7 +47,7 @@ pub fn check(name: &str, picture: &Picture) {
     let texts: Vec<String> = root
         .descendants()
         .filter(|n| n.has_tag_name("text"))
-        .filter_map(|n| n.text().map(|t| t.trim().to_string()))
+        .filter_map(|n| n.text().map(|t| t.trim_matches('\n').to_string()))
         .collect();
     let labels: Vec<String> = picture.labels().iter().map(|l| l.text.clone()).collect();
     assert_eq!(texts, labels, "{name}: SVG texts are the labels");
@@ -56,7 +56,12 @@ pub fn check(name: &str, picture: &Picture) {
         "{name}: {}",
         picture.alt
     );
+    svg
+}
 
+/// Checks what holds for every picture, and leaves it under `name` to be looked at.
+pub fn check(name: &str, picture: &Picture) {
+    let svg = check_svg(name, picture);
     let bytes = picture.png().expect("PNG");
     let info = png::Decoder::new(bytes.as_slice())
         .read_info()
@@ -69,6 +74,9 @@ pub fn check(name: &str, picture: &Picture) {
         picture.canvas().bottom.ceil() as u32 * PNG_PIXELS,
         "{name}"
     );
+    if name.ends_with("_realistic") {
+        crate::stored::compare(name, &bytes);
+    }
     std::fs::write(folder().join(format!("{name}.png")), bytes).expect("written");
     std::fs::write(folder().join(format!("{name}.svg")), svg).expect("written");
     std::fs::write(folder().join(format!("{name}.txt")), &picture.alt).expect("written");

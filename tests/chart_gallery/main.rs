@@ -4,12 +4,25 @@
 //! description and fonts, the PNG has the size promised, the alt text says something. The PNG and SVG files are left
 //! in the test's folder under `target/tmp/gallery` to be looked at.
 
+#[cfg(test)]
 mod annual_cost;
+#[cfg(test)]
 mod common;
+#[cfg(test)]
 mod hours;
+#[cfg(test)]
 mod loads;
+#[cfg(test)]
 mod machines;
+#[cfg(test)]
 mod pressure_enthalpy;
+#[cfg(test)]
+mod random;
+#[cfg(test)]
+mod stored;
+#[cfg(test)]
 mod studies;
+#[cfg(test)]
 mod sums;
+#[cfg(test)]
 mod weather;

@@ -223,11 +223,14 @@ fn spend_hostile() {
         .enumerate()
         .map(|(i, n)| spend(n, i == 2, 1e6 - 10.0 * i as f64, 100.0, 3, 1.0))
         .collect();
-    data.systems[5].spent.truncate(1);
     check(
         "spend_hostile",
         &cumulative_spend(&data, &english()).expect("drawn"),
     );
+    data.systems[5].spent.truncate(1);
+    let error = cumulative_spend(&data, &english()).expect_err("uneven");
+    let lengths = "26, 26, 26, 26, 26, 1, 26 and 26";
+    assert!(error.to_string().contains(lengths), "{error}");
 }
 
 fn brine(label: &str, drop: f64) -> BrineLine {

@@ -1,5 +1,21 @@
-import java.util.*;
-public class C { public static void main(String[] a){ TreeMap<String,Integer> m=new TreeMap<>(); for(Currency c: Currency.getAvailableCurrencies()) m.put(c.getCurrencyCode(), c.getDefaultFractionDigits()); 
-for (var e: m.entrySet()) System.out.print(e.getKey()+":"+e.getValue()+" "); 
-TreeSet<String> act=new TreeSet<>(); for (String cc: Locale.getISOCountries()) { try { Currency c=Currency.getInstance(new Locale("",cc)); if(c!=null) act.add(c.getCurrencyCode()); } catch(Exception e){} }
-System.out.println(); System.out.println(act.size()+" "+act); System.out.println(System.getProperty("java.version"));}}
+// Reference for the table of currencies in src/units/money.rs: every ISO 4217 code that OpenJDK gives to a country, with
+// its digits. Made with OpenJDK 17.0.15: java tariff_currencies.java > tariff_currencies.csv
+import java.util.Currency;
+import java.util.Locale;
+import java.util.TreeSet;
+
+class TariffCurrencies {
+    public static void main(String[] arguments) {
+        var codes = new TreeSet<String>();
+        for (String country : Locale.getISOCountries()) {
+            Currency currency = Currency.getInstance(new Locale("", country));
+            if (currency != null) {
+                codes.add(currency.getCurrencyCode());
+            }
+        }
+        System.out.println("code,digits");
+        for (String code : codes) {
+            System.out.println(code + "," + Currency.getInstance(code).getDefaultFractionDigits());
+        }
+    }
+}

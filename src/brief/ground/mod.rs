@@ -1,17 +1,20 @@
 //! From the tables of a ground source to a source.
 
 mod buried;
+mod circuit;
+mod layout;
 mod tables;
 mod well;
 
-pub(super) use buried::whole_within;
-pub(super) use tables::{BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable};
+pub(super) use tables::{
+    BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
+};
 
 use super::defaults;
 use super::notes::Notes;
 use super::raw::SystemTable;
 use super::system::Surroundings;
-use crate::bounds;
+use crate::bounds::{self, Bound};
 use crate::document::{Check, Leaf, Section};
 use crate::heatpump::HeatPump;
 use crate::problem::Finding;
@@ -39,9 +42,17 @@ pub(super) fn ground(
         ("[[choice.trench]]", !table.trench.is_empty()),
         ("[choice.well]", table.well.is_some()),
     ];
-    let given: Vec<_> = ways.iter().filter(|(_, given)| *given).map(|(name, _)| *name).collect();
+    let given: Vec<_> = ways
+        .iter()
+        .filter(|(_, given)| *given)
+        .map(|(name, _)| *name)
+        .collect();
     if given.len() != 1 {
-        let found = if given.is_empty() { "no loop".to_owned() } else { given.join(" and ") };
+        let found = if given.is_empty() {
+            "no loop".to_owned()
+        } else {
+            given.join(" and ")
+        };
         check.refuse(
             &table.span(),
             format!("{found} in a ground source"),
@@ -65,13 +76,48 @@ fn only_where_they_count(table: &SystemTable, check: &mut Check) {
     let buried = !table.bore.is_empty() || !table.trench.is_empty();
     let quick = table.loop_resistance.is_some();
     let tables = [
-        ("ground", table.ground.as_ref().map(Section::span), buried, "bores or trenches"),
-        ("brine", table.brine.as_ref().map(Section::span), buried, "bores or trenches"),
-        ("pipe", table.pipe.as_ref().map(Section::span), buried, "bores or trenches"),
-        ("shown_year", table.shown_year.as_ref().map(Leaf::span), buried, "bores or trenches"),
-        ("borehole", table.borehole.as_ref().map(Section::span), !table.bore.is_empty(), "bores"),
-        ("loop_depth", table.loop_depth.as_ref().map(Leaf::span), quick, "loop_resistance"),
-        ("soil_diffusivity", table.soil_diffusivity.as_ref().map(Leaf::span), quick, "loop_resistance"),
+        (
+            "ground",
+            table.ground.as_ref().map(Section::span),
+            buried,
+            "bores or trenches",
+        ),
+        (
+            "brine",
+            table.brine.as_ref().map(Section::span),
+            buried,
+            "bores or trenches",
+        ),
+        (
+            "pipe",
+            table.pipe.as_ref().map(Section::span),
+            buried,
+            "bores or trenches",
+        ),
+        (
+            "shown_year",
+            table.shown_year.as_ref().map(Leaf::span),
+            buried,
+            "bores or trenches",
+        ),
+        (
+            "borehole",
+            table.borehole.as_ref().map(Section::span),
+            !table.bore.is_empty(),
+            "bores",
+        ),
+        (
+            "loop_depth",
+            table.loop_depth.as_ref().map(Leaf::span),
+            quick,
+            "loop_resistance",
+        ),
+        (
+            "soil_diffusivity",
+            table.soil_diffusivity.as_ref().map(Leaf::span),
+            quick,
+            "loop_resistance",
+        ),
     ];
     for (name, span, counts, owner) in tables {
         if let (Some(span), false) = (span, counts) {
@@ -103,7 +149,12 @@ fn wave(ground: &Ground<'_>, check: &mut Check) -> Option<AnnualSwing> {
 /// A loop behind one steady resistance.
 fn quick(ground: &Ground<'_>, check: &mut Check, notes: &mut Notes) -> Option<GroundLoop> {
     let table = ground.table;
-    let depth = notes.quantity(check, &table.loop_depth, &bounds::TRENCH_DEPTH_M, &defaults::LOOP_DEPTH);
+    let depth = notes.quantity(
+        check,
+        &table.loop_depth,
+        &bounds::TRENCH_DEPTH_M,
+        &defaults::LOOP_DEPTH,
+    );
     let diffusivity = notes.quantity(
         check,
         &table.soil_diffusivity,
@@ -114,10 +165,15 @@ fn quick(ground: &Ground<'_>, check: &mut Check, notes: &mut Notes) -> Option<Gr
     let wave = wave(ground, check)?;
     let hours = ground.around.site?.outdoor_c.len();
     let (depth_m, diffusivity) = (depth?.m(), diffusivity?.m2_per_s());
-    let undisturbed_c = (0..hours).map(|hour| undisturbed_c(&wave, depth_m, diffusivity, hour as f64)).collect();
+    let undisturbed_c = (0..hours)
+        .map(|hour| undisturbed_c(&wave, depth_m, diffusivity, hour as f64))
+        .collect();
     notes.add(
         "undisturbed ground",
-        format!("mean {:.1} °C, swing {:.1} K at the surface", wave.mean_c, wave.amplitude_k),
+        format!(
+            "mean {:.1} °C, swing {:.1} K at the surface",
+            wave.mean_c, wave.amplitude_k
+        ),
         "annual wave of the weather file carried down by Kusuda and Achenbach 1965",
     );
     notes.add(
@@ -125,5 +181,27 @@ fn quick(ground: &Ground<'_>, check: &mut Check, notes: &mut Notes) -> Option<Gr
         "one steady resistance",
         "the quick option: it over-chills cold nights, under-chills the season and does not age; describe bores or trenches for that",
     );
-    Some(GroundLoop { undisturbed_c, resistance_k_per_kw: resistance?.k_per_kw() })
+    Some(GroundLoop {
+        undisturbed_c,
+        resistance_k_per_kw: resistance?.k_per_kw(),
+    })
+}
+
+/// A whole number within a bound, when it is there and right.
+pub(super) fn whole_within(
+    check: &mut Check,
+    leaf: &Option<Leaf<i64>>,
+    bound: &Bound,
+) -> Option<f64> {
+    let value = check.value(leaf)? as f64;
+    if let (false, Some(leaf)) = (bound.holds(value), leaf) {
+        check.refuse(
+            &leaf.span(),
+            format!("{value}"),
+            bound.words(),
+            "check the number",
+        );
+        return None;
+    }
+    Some(value)
 }

@@ -3,6 +3,9 @@
 mod fields;
 mod prices;
 mod pricing;
+mod steps;
+mod tax;
+mod times;
 
 pub use fields::{Date, TariffFields};
 
