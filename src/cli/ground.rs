@@ -6,7 +6,10 @@ use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
 use crate::answer::ground::ground_answer;
 use crate::brief::Brief;
 use crate::calendar::HOURS_PER_LEAP_YEAR;
-use crate::chart::{BrineLine, BrineYear, Marks, brine_year, calendar_months};
+use crate::chart::{
+    BrineLife, BrineLine, BrineYear, ChartError, Marks, Picture, brine_life, brine_year,
+    calendar_months,
+};
 use crate::report::ground_text;
 use crate::source::Source;
 use crate::study::{Case, Contender, LoopYear, loop_life, shortest_loop};
@@ -41,7 +44,8 @@ pub struct Args {
     /// Leave the search for the shortest loop out.
     #[arg(long)]
     no_sizing: bool,
-    /// Picture of the brine through the first and the last year, SVG or PNG by its ending; one file for each ground source.
+    /// Pictures of the brine through the first and the last year and over the life, SVG or PNG by the ending; several ground sources
+    /// are numbered.
     #[arg(long, value_name = "FILE")]
     chart: Option<PathBuf>,
     /// Overwrite a picture that is there already.
@@ -77,7 +81,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     let chosen = chosen(case, args)?;
     let mut answers = Vec::new();
     let mut pictures = Vec::new();
-    for contender in &chosen {
+    for (index, contender) in chosen.iter().enumerate() {
         let mut lines = Lines::new(args.years);
         let life = loop_life(case, contender, args.years, |year, _, brine| {
             lines.see(year, brine.map_or(f64::NAN, |brine| brine.entering_c));
@@ -86,8 +90,12 @@ pub fn run(args: &Args) -> Result<(), Failure> {
             (!args.no_sizing).then(|| shortest_loop(case, contender, args.floor, args.years));
         answers.extend(ground_answer(contender, &life, shortest));
         if let Some(path) = &args.chart {
-            let path = numbered(path, pictures.len(), chosen.len());
-            pictures.push(picture(&path, contender, &life, lines)?);
+            let path = numbered(path, index, chosen.len());
+            let life_path = beside(&path, "-life");
+            pictures.push(year_picture(&path, contender, &life, lines)?);
+            if args.years > 1 {
+                pictures.push(life_picture(&life_path, contender, &life)?);
+            }
         }
     }
     write_files(&pictures, args.force)?;
@@ -175,7 +183,7 @@ impl Lines {
     }
 }
 
-fn picture(
+fn year_picture(
     path: &Path,
     contender: &Contender,
     life: &[LoopYear],
@@ -192,60 +200,103 @@ fn picture(
             hours_c: lines.last_year,
         });
     }
-    let (limit, undisturbed_c) = match &contender.system.heating {
-        Heating::HeatPump(machine) => (
-            Some((
-                "lowest the machine accepts".to_owned(),
-                machine.machine.limits().lowest_source_c,
-            )),
-            match &machine.source {
-                Source::Buried(buried) if life.iter().any(|year| year.average_wall_c.is_some()) => {
-                    let column = buried.undisturbed();
-                    Some(column.iter().sum::<f64>() / column.len() as f64)
-                }
-                _ => None,
-            },
-        ),
-        _ => (None, None),
+    let undisturbed_c = match &contender.system.heating {
+        Heating::HeatPump(machine) => match &machine.source {
+            Source::Buried(buried) if life.iter().any(|year| year.average_wall_c.is_some()) => {
+                let column = buried.undisturbed();
+                Some(column.iter().sum::<f64>() / column.len() as f64)
+            }
+            _ => None,
+        },
+        _ => None,
     };
     let data = BrineYear {
         source: contender.system.label.clone(),
         lines: drawn,
         months: calendar_months(leap),
         undisturbed_c,
-        limit,
+        limit: limit(contender),
     };
-    let fail = |reason: String| Failure::Write {
-        path: path.to_owned(),
-        reason,
+    written(path, brine_year(&data, &Marks::default()))
+}
+
+fn life_picture(path: &Path, contender: &Contender, life: &[LoopYear]) -> Result<NewFile, Failure> {
+    let column = |figure: fn(&LoopYear) -> Option<f64>| -> Vec<f64> {
+        life.iter()
+            .map(|year| figure(year).unwrap_or(f64::NAN))
+            .collect()
     };
-    let picture = brine_year(&data, &Marks::default()).map_err(|error| fail(error.to_string()))?;
+    let mut lines = vec![
+        (
+            "lowest brine".to_owned(),
+            column(|year| year.coldest.map(|hour| hour.entering_c)),
+        ),
+        (
+            "mean brine".to_owned(),
+            column(|year| Some(year.average_brine_c)),
+        ),
+    ];
+    if life.iter().any(|year| year.average_wall_c.is_some()) {
+        lines.push(("mean wall".to_owned(), column(|year| year.average_wall_c)));
+    }
+    let data = BrineLife {
+        source: contender.system.label.clone(),
+        lines,
+        limit: limit(contender),
+    };
+    written(path, brine_life(&data, &Marks::default()))
+}
+
+/// The lowest source temperature that the machine accepts.
+fn limit(contender: &Contender) -> Option<(String, f64)> {
+    match &contender.system.heating {
+        Heating::HeatPump(machine) => Some((
+            "lowest the machine accepts".to_owned(),
+            machine.machine.limits().lowest_source_c,
+        )),
+        _ => None,
+    }
+}
+
+/// A picture as a file, SVG or PNG by its ending.
+fn written(path: &Path, picture: Result<Picture, ChartError>) -> Result<NewFile, Failure> {
     let is_png = path
         .extension()
         .is_some_and(|ending| ending.eq_ignore_ascii_case("png"));
-    let content = if is_png {
-        picture.png().map_err(|error| fail(error.to_string()))?
-    } else {
-        picture
-            .svg()
-            .map_err(|error| fail(error.to_string()))?
-            .into_bytes()
-    };
-    Ok(NewFile::new(path, content))
+    let content = picture.and_then(|picture| {
+        if is_png {
+            picture.png()
+        } else {
+            picture.svg().map(String::into_bytes)
+        }
+    });
+    match content {
+        Ok(content) => Ok(NewFile::new(path, content)),
+        Err(error) => Err(Failure::Write {
+            path: path.to_owned(),
+            reason: error.to_string(),
+        }),
+    }
 }
 
 /// The path of a picture, numbered when there are several.
 fn numbered(path: &Path, index: usize, count: usize) -> PathBuf {
     if count < 2 {
-        return path.to_owned();
+        path.to_owned()
+    } else {
+        beside(path, &format!("-{}", index + 1))
     }
-    let stem = path
-        .file_stem()
-        .map(|stem| stem.to_string_lossy().into_owned())
-        .unwrap_or_default();
-    let ending = path
-        .extension()
-        .map(|ending| ending.to_string_lossy().into_owned())
-        .unwrap_or_default();
-    path.with_file_name(format!("{stem}-{}.{ending}", index + 1))
+}
+
+/// A path with something added to its name before the ending.
+fn beside(path: &Path, added: &str) -> PathBuf {
+    let part = |part: Option<&std::ffi::OsStr>| {
+        part.map(|part| part.to_string_lossy().into_owned())
+            .unwrap_or_default()
+    };
+    path.with_file_name(format!(
+        "{}{added}.{}",
+        part(path.file_stem()),
+        part(path.extension())
+    ))
 }

@@ -2,8 +2,7 @@
 
 use std::fmt::Write as _;
 
-use comfy_table::{CellAlignment, Table, presets};
-
+use super::table::plain_table;
 use crate::answer::ground::{GROUND_CAUTION, GroundAnswer, GroundYear};
 
 /// The answers as text for a terminal of 80 columns.
@@ -44,38 +43,37 @@ fn heading(answer: &GroundAnswer) -> String {
     text
 }
 
-fn table(answer: &GroundAnswer) -> Table {
-    let mut table = Table::new();
-    table.load_style(presets::UTF8_HORIZONTAL_ONLY);
-    table.set_header(
-        std::iter::once("Year of its life".to_owned())
-            .chain(answer.years.iter().map(|y| y.year.to_string())),
-    );
+fn table(answer: &GroundAnswer) -> String {
     let c = |value: Option<f64>| value.map_or_else(|| "–".to_owned(), |c| format!("{c:.1}"));
     let two = |value: Option<f64>| value.map_or_else(|| "–".to_owned(), |v| format!("{v:.2}"));
-    let mut row = |name: &str, figure: &dyn Fn(&GroundYear) -> String| {
-        table.add_row(std::iter::once(name.to_owned()).chain(answer.years.iter().map(figure)));
+    let row = |name: &str, figure: &dyn Fn(&GroundYear) -> String| -> Vec<String> {
+        std::iter::once(name.to_owned())
+            .chain(answer.years.iter().map(figure))
+            .collect()
     };
-    row("Lowest entering the machine, °C", &|y| c(y.lowest_brine_c));
-    row("  mean of the brine then", &|y| c(y.lowest_mean_c));
-    row("  leaving the machine then", &|y| c(y.lowest_leaving_c));
-    row("Average entering, °C", &|y| c(y.average_brine_c));
-    row("Wall, mean of the year, °C", &|y| c(y.bore_wall_c));
-    row("  lowest", &|y| c(y.lowest_wall_c));
-    row("SPF with source pumps, H2", &|y| two(y.spf_h2));
-    row("Heat taken, kWh", &|y| format!("{:.0}", y.taken_kwh));
-    row("Heat put back, kWh", &|y| format!("{:.0}", y.returned_kwh));
-    row("Source pumps, kWh", &|y| {
-        format!("{:.0}", y.source_pump_kwh)
-    });
-    row("Backup and immersion, kWh", &|y| {
-        format!("{:.0}", y.backup_kwh)
-    });
-    row("Hours the machine stood", &|y| y.hours_stopped.to_string());
-    for column in table.column_iter_mut().skip(1) {
-        column.set_cell_alignment(CellAlignment::Right);
-    }
-    table
+    let rows = vec![
+        row("Lowest entering the machine, °C", &|y| c(y.lowest_brine_c)),
+        row("  mean of the brine then", &|y| c(y.lowest_mean_c)),
+        row("  leaving the machine then", &|y| c(y.lowest_leaving_c)),
+        row("Average entering, °C", &|y| c(y.average_brine_c)),
+        row("Wall, mean of the year, °C", &|y| c(y.bore_wall_c)),
+        row("  lowest", &|y| c(y.lowest_wall_c)),
+        row("SPF with source pumps, H2", &|y| two(y.spf_h2)),
+        row("Heat taken, kWh", &|y| format!("{:.0}", y.taken_kwh)),
+        row("Heat put back, kWh", &|y| format!("{:.0}", y.returned_kwh)),
+        row("Source pumps, kWh", &|y| {
+            format!("{:.0}", y.source_pump_kwh)
+        }),
+        row("Backup and immersion, kWh", &|y| {
+            format!("{:.0}", y.backup_kwh)
+        }),
+        row("Hours the machine stood", &|y| y.hours_stopped.to_string()),
+    ];
+    let years = answer.years.iter().map(|y| y.year.to_string());
+    plain_table(
+        std::iter::once("Year of its life".to_owned()).chain(years),
+        rows,
+    )
 }
 
 /// What stands below the table: sizing, and how far the method goes.
