@@ -29,7 +29,9 @@ fn weather(outdoor_c: Vec<f64>, hour: i64, offset: i32, share: Option<f64>) -> W
     Weather {
         file: "made".to_owned(),
         axis: HourAxis {
-            start: Utc.timestamp_opt(1_672_531_200 + hour * 3600 + phase, 0).unwrap(),
+            start: Utc
+                .timestamp_opt(1_672_531_200 + hour * 3600 + phase, 0)
+                .unwrap(),
             hours,
         },
         zone: Zone::Fixed(chrono::FixedOffset::east_opt(offset * 1800).unwrap()),

@@ -98,7 +98,9 @@ pub fn step<P: Probe>(
     };
     let mut wanted_kw = match &plan.recovery {
         Some(recovery) if recovery.at_the_time => reach(set_point_c),
-        _ => home.fabric.heat_wanted_kw(state.room_c, set_point_c, outdoor_c, gains_kw),
+        _ => home
+            .fabric
+            .heat_wanted_kw(state.room_c, set_point_c, outdoor_c, gains_kw),
     };
     if let Some(recovery) = &plan.recovery {
         let under_way = &mut state.recovering;
