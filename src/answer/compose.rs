@@ -4,7 +4,8 @@ use std::collections::BTreeMap;
 
 use super::bills::pair;
 use super::estimate::{
-    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer,
+    WeatherUsed, YearAnswer,
 };
 use super::home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomsAnswer, StoreAnswer,
@@ -78,6 +79,8 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
             system.pattern_cost = Some(system.cost - as_today.costs.total);
         }
         findings.extend(shortfalls(&system));
+        system.ground = ground_shown(case, contender, outcome)?;
+        findings.extend(source_too_cold(&system));
         if i > 0 {
             let levers = [
                 Lever::ElectricityRate,
@@ -209,6 +212,7 @@ fn system(
         carbon_saving_kg: compared(sums.carbon_kg, today.mean_sums().carbon_kg),
         capital: contender.capital,
         capital_parts: contender.capital_parts.iter().cloned().collect(),
+        ground: None,
         monthly: (0..12)
             .map(|month0| {
                 let month = outcome.mean_month(month0);
@@ -231,6 +235,34 @@ fn system(
             })
             .collect(),
     }
+}
+
+/// The year of a buried loop's life that is shown, beside its first.
+fn ground_shown(
+    case: &Case,
+    contender: &Contender,
+    outcome: &Outcome,
+) -> Result<Option<GroundShown>, Problems> {
+    let Some(aged) = contender.aged else {
+        return Ok(None);
+    };
+    let first = case.run_from(contender, Memory::default(), None)?;
+    let lowest = |outcome: &Outcome| {
+        let lowest_c = outcome
+            .years
+            .iter()
+            .map(|year| year.min_source_c)
+            .fold(f64::INFINITY, f64::min);
+        lowest_c.is_finite().then_some(lowest_c)
+    };
+    Ok(Some(GroundShown {
+        shown_year: aged.year,
+        lowest_brine_c: lowest(outcome),
+        hours_stopped: outcome.mean(|year| f64::from(year.hours_stopped)),
+        first_year_cost: first.costs.total,
+        first_year_spf_h4: first.mean_sums().spf_h4(),
+        first_year_lowest_brine_c: lowest(&first),
+    }))
 }
 
 fn balance_words(point: BalancePoint) -> String {
@@ -272,6 +304,25 @@ fn shortfalls(system: &SystemAnswer) -> Vec<Finding> {
         ));
     }
     found
+}
+
+/// A loop too short for its machine.
+fn source_too_cold(system: &SystemAnswer) -> Option<Finding> {
+    let ground = system
+        .ground
+        .as_ref()
+        .filter(|ground| ground.hours_stopped >= 0.5)?;
+    Some(Finding::new(
+        Severity::Caution,
+        format!(
+            "the machine of \"{}\" stands in {:.0} hours of year {} of its loop because the brine is too cold for it; backup and immersion heater use {:.0} kWh",
+            system.label,
+            ground.hours_stopped,
+            ground.shown_year,
+            system.backup_kwh.unwrap_or(0.0),
+        ),
+        "the loop is too short for this home and machine: see the command ground for the shortest one that would do",
+    ))
 }
 
 /// Stored hot water below the temperature of UK HSE guidance: 60 °C in the store, at the taps no less than 50 °C within a minute.

@@ -174,10 +174,33 @@ pub struct SystemAnswer {
     /// The same part by part, where it is given so.
     #[serde(skip_serializing_if = "BTreeMap::is_empty")]
     pub capital_parts: BTreeMap<String, f64>,
+    /// Which year of a buried loop's life the figures are of, and what its first one comes to.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub ground: Option<GroundShown>,
     /// January to December of a mean year.
     pub monthly: Vec<MonthAnswer>,
     /// Each year of the weather.
     pub by_year: Vec<YearAnswer>,
+}
+
+/// A buried loop in the estimate: the year of its life that every figure is of, beside its first.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct GroundShown {
+    /// Year of the loop's life, from 1.
+    pub shown_year: u32,
+    /// Lowest temperature entering the machine in it.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub lowest_brine_c: Option<f64>,
+    /// Hours in which the machine stood because its source was outside its limits.
+    pub hours_stopped: f64,
+    /// Cost in the first year of its life.
+    pub first_year_cost: f64,
+    /// Seasonal performance factor with all auxiliaries in the first year.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub first_year_spf_h4: Option<f64>,
+    /// Lowest temperature entering the machine in the first year.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub first_year_lowest_brine_c: Option<f64>,
 }
 
 /// One month of a mean year.

@@ -5,6 +5,7 @@ mod compose;
 pub mod cycle;
 mod estimate;
 pub mod explain;
+pub mod ground;
 mod home;
 pub mod machine;
 pub mod rating;
@@ -12,7 +13,8 @@ pub mod tariff;
 
 pub use compose::{BillsTold, Told, compare_patterns, compose};
 pub use estimate::{
-    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer,
+    WeatherUsed, YearAnswer,
 };
 pub use home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomAnswer, RoomsAnswer,

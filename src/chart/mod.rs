@@ -40,6 +40,7 @@ mod scene;
 
 mod annual_cost;
 mod break_even;
+mod brine_life;
 mod brine_year;
 mod carbon_by_system;
 mod carpet;
@@ -58,6 +59,7 @@ mod swings;
 
 pub use annual_cost::{AnnualCost, SystemCost, annual_cost};
 pub use break_even::{BreakEven, BreakEvenLine, break_even};
+pub use brine_life::{BrineLife, brine_life};
 pub use brine_year::{BrineLine, BrineYear, brine_year};
 pub use carbon_by_system::{CarbonBySystem, SystemCarbon, carbon_by_system};
 pub use carpet::{Carpet, Spell, calendar_months, carpet};

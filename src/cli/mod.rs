@@ -10,6 +10,7 @@ mod estimate;
 mod explain;
 mod failure;
 mod files;
+mod ground;
 mod machine;
 mod output;
 mod rating;
@@ -45,6 +46,7 @@ enum Command {
     Machine(machine::Args),
     Rating(rating::Args),
     Tariff(tariff::Args),
+    Ground(ground::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -65,5 +67,6 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
         Command::Machine(args) => machine::run(args),
         Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
+        Command::Ground(args) => ground::run(args),
     }
 }

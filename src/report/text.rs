@@ -120,6 +120,29 @@ const LINES: &[Line] = &[
         s.balance_point_with_hot_water_c
             .map(|c| format!("{c:.1} °C"))
     }),
+    ("Year of the loop shown", |s| {
+        s.ground.as_ref().map(|g| g.shown_year.to_string())
+    }),
+    ("  cost in its year 1", |s| {
+        s.ground
+            .as_ref()
+            .map(|g| format!("{:.0}", g.first_year_cost))
+    }),
+    ("  SPF H4 in year 1", |s| {
+        let spf = s.ground.as_ref()?.first_year_spf_h4?;
+        Some(format!("{spf:.2}"))
+    }),
+    ("  lowest brine", |s| {
+        let c = s.ground.as_ref()?.lowest_brine_c?;
+        Some(format!("{c:.1} °C"))
+    }),
+    ("  lowest in year 1", |s| {
+        let c = s.ground.as_ref()?.first_year_lowest_brine_c?;
+        Some(format!("{c:.1} °C"))
+    }),
+    ("  machine stood, h", |s| {
+        s.ground.as_ref().map(|g| format!("{:.0}", g.hours_stopped))
+    }),
     ("Hours with backup", |s| {
         s.backup_kwh.map(|_| format!("{:.0}", s.hours_backup))
     }),
