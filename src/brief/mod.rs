@@ -1,8 +1,11 @@
 //! The brief: one TOML file that describes a home, its weather, today and the choices.
 
 mod bills;
+mod by_rooms;
+mod clock_leaves;
 mod defaults;
 mod demo;
+mod emitter_findings;
 mod emitters;
 mod energy;
 mod envelope;

@@ -3,13 +3,11 @@
 use schemars::JsonSchema;
 use serde::Deserialize;
 
+use super::clock_leaves::{ClockHour, DaySpans, Spells, WeekDay};
 use super::ground::{
     BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
 };
-use super::leaves::{
-    Capital, ClockHour, ColdWater, DaySpans, HeatLossSource, HygieneBy, Line, SetBack, Spells,
-    WeekDay,
-};
+use super::leaves::{Capital, ColdWater, HeatLossSource, HygieneBy, Line, SetBack};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind, TappingProfile, WarmUp};

@@ -5,9 +5,12 @@
 
 mod days;
 mod fit;
+mod found;
 mod model;
 mod readings;
+mod rows;
 
 pub use days::{DailyWeather, Day};
-pub use fit::{FitProblem, Limits, Point, Signature, Stated, fit};
+pub use fit::fit;
+pub use found::{FitProblem, Limits, Point, Signature, Stated};
 pub use readings::{Conversion, Interval, Readings};
