@@ -3,6 +3,7 @@
 use std::sync::Arc;
 
 use super::correction::FittedMachine;
+use super::duty::{ColdSide, Duty};
 use super::frost::Frost;
 use super::idle::IdlePower;
 use super::limits::Limits;
@@ -144,6 +145,27 @@ impl HeatPump {
     /// Source and flow temperature of the rated output, °C.
     pub fn rated_condition(&self) -> (f64, f64) {
         self.core.rated_condition
+    }
+
+    /// Heat drawn from the source at its rated output and condition, kW.
+    pub fn rated_draw_kw(&self) -> f64 {
+        /// Flow minus return of the standard rating, EN 14511, K.
+        const SPREAD_K: f64 = 5.0;
+        let (open_c, flow_c) = self.core.rated_condition;
+        let cold = ColdSide {
+            open_c,
+            k_per_kw: 0.0,
+            relative_humidity: None,
+        };
+        let heat_kw = self.rated_output_kw();
+        let duty = Duty {
+            heat_kw,
+            flow_c,
+            spread_k: SPREAD_K,
+            hours: 1.0,
+            at_full_output: true,
+        };
+        self.deliver(&cold, &duty).extracted_kwh
     }
 
     /// Size relative to the sheet.

@@ -7,6 +7,8 @@ use chrono_tz::Tz;
 use super::ageing::Aged;
 use super::outcome::{Outcome, YearOutcome, price};
 use crate::bill::Connection;
+use crate::home::Pattern;
+use crate::plan::Ability;
 use crate::problem::Problems;
 use crate::source::Memory;
 use crate::tariff::{Meter, Tariff};
@@ -54,8 +56,16 @@ pub struct Contender {
     pub indoor_c: f64,
     /// Design outdoor temperature, °C.
     pub design_outdoor_c: f64,
+    /// Design heat load, kW; it stays when the heat loss is scaled to meter readings.
+    pub design_load_kw: f64,
+    /// When the rooms are heated.
+    pub pattern: Pattern,
+    /// What a warm-up can count on.
+    pub ability: Ability,
     /// What it costs to put in, in the case's currency.
     pub capital: Option<f64>,
+    /// The same part by part, where it is given so.
+    pub capital_parts: Vec<(String, f64)>,
     /// Year of a buried loop's life that is shown, from 1.
     pub shown_year: u32,
     /// The ground at the beginning of that year, see [`Case::age_grounds`]; nothing for fresh ground or none.
