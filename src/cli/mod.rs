@@ -15,6 +15,7 @@ mod machine;
 mod output;
 mod rating;
 mod tariff;
+mod weather;
 
 use std::process::ExitCode;
 
@@ -47,6 +48,7 @@ enum Command {
     Rating(rating::Args),
     Tariff(tariff::Args),
     Ground(ground::Args),
+    Weather(weather::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -68,5 +70,6 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
         Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
         Command::Ground(args) => ground::run(args),
+        Command::Weather(args) => weather::run(args),
     }
 }
