@@ -24,6 +24,7 @@ pub mod tariff;
 pub mod year;
 // rank 4: what the hours add up to
 pub mod bill;
+pub mod lifetime;
 pub mod plan;
 // rank 5: cases side by side
 pub mod study;

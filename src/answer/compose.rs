@@ -3,11 +3,13 @@
 use std::collections::BTreeMap;
 
 use super::estimate::{
-    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, HomeUsed, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };
+use super::lever::lever_answer;
+use crate::lifetime::Outlay;
 use crate::problem::{Finding, Problems, Severity};
 use crate::study::{
-    BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even,
+    BalancePoint, Case, Contender, Lever, Measure, Outcome, Pair, balance_point, break_even,
 };
 use crate::year::Heating;
 
@@ -52,10 +54,10 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
                 Lever::FlowTemperature,
             ];
             let mut answers = Vec::new();
-            for lever in levers {
-                if let Some(found) = break_even(case, outcomes, i, lever)? {
-                    answers.push(lever_answer(&found, &system.label));
-                }
+            let pair = Pair::new(case, outcomes, i);
+            for (lever, pair) in levers.into_iter().zip(pair.iter().cycle()) {
+                let found = break_even(pair, lever, &[Measure::YearlyCost])?;
+                answers.extend(found.iter().map(|found| lever_answer(found, pair)));
             }
             break_evens.insert(system.label.clone(), answers);
         }
@@ -149,7 +151,11 @@ fn system(
         carbon_kg: sums.carbon_kg,
         saving: compared(costs.total, today.costs.total),
         carbon_saving_kg: compared(sums.carbon_kg, today.mean_sums().carbon_kg),
-        capital: contender.capital,
+        capital: contender
+            .outlay
+            .as_ref()
+            .filter(|_| !contender.today)
+            .map(Outlay::capital),
         monthly: (0..12)
             .map(|month0| {
                 let month = outcome.mean_month(month0);
@@ -222,78 +228,4 @@ fn cool_stores(case: &Case) -> Option<Finding> {
             "legionella can grow there, so a regular hygiene cycle is usual, and water above 50 °C scalds; follow local rules and a licensed installer",
         )
     })
-}
-
-fn lever_answer(found: &BreakEven, label: &str) -> LeverAnswer {
-    let bound = found.lever.bound();
-    let conditions: Vec<_> = found
-        .crossings
-        .iter()
-        .map(|crossing| condition(found, crossing.value))
-        .collect();
-    let sentence = match conditions.as_slice() {
-        [] => format!(
-            "No {} makes \"{label}\" cost what today's system costs.",
-            bound.words()
-        ),
-        _ => {
-            let sides = found
-                .crossings
-                .iter()
-                .zip(&conditions)
-                .map(|(crossing, condition)| {
-                    let side = if crossing.cheaper_above {
-                        "above"
-                    } else {
-                        "below"
-                    };
-                    format!("{condition}; {side} that it is the cheaper one")
-                });
-            let sides: Vec<_> = sides.collect();
-            format!(
-                "\"{label}\" breaks even with {}.",
-                sides.join(", and again with ")
-            )
-        }
-    };
-    LeverAnswer {
-        lever: bound.label.to_owned(),
-        unit: bound.unit.to_owned(),
-        now: found.now,
-        values: found
-            .crossings
-            .iter()
-            .map(|crossing| crossing.value)
-            .collect(),
-        between: [bound.low, bound.high],
-        conditions,
-        sentence,
-    }
-}
-
-/// A value of a lever as it is said aloud.
-fn condition(found: &BreakEven, value: f64) -> String {
-    let compared = |what: &str, more: &str, less: &str| {
-        let percent = (value - 1.0) * 100.0;
-        format!(
-            "{what} {:.0} % {}",
-            percent.abs(),
-            if percent >= 0.0 { more } else { less }
-        )
-    };
-    match found.lever {
-        Lever::ElectricityRate => compared("electricity", "dearer", "cheaper"),
-        Lever::FuelRate => compared("gas", "dearer", "cheaper"),
-        Lever::HeatLoss => compared("a heat loss", "larger", "smaller"),
-        Lever::FlowTemperature => {
-            format!("a design flow of {value:.0} °C (now {:.0} °C)", found.now)
-        }
-        Lever::FieldFactor => {
-            let percent = value * 100.0;
-            format!(
-                "{percent:.0} % of laboratory performance (now {:.0} %)",
-                found.now * 100.0
-            )
-        }
-    }
 }

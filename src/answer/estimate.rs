@@ -179,6 +179,8 @@ pub struct LeverAnswer {
     pub lever: String,
     /// Its unit.
     pub unit: String,
+    /// What the choice and today's system are compared by.
+    pub measure: String,
     /// Where it stands.
     pub now: f64,
     /// Values at which the choice costs what today's system costs; empty when there is none in the range.

@@ -3,6 +3,9 @@
 mod compose;
 pub mod cycle;
 mod estimate;
+mod lever;
+pub mod lifetime;
+pub mod study;
 pub mod tariff;
 
 pub use compose::{Told, compose};

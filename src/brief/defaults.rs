@@ -54,5 +54,19 @@ defaults! {
     LOOP_DEPTH = "choice.loop_depth", "1.2 m", "common practice, no source";
     SOIL_DIFFUSIVITY = "choice.soil_diffusivity", "5e-7 m²/s", "moist loam: common practice, no source";
     BOILER_OUTPUT = "today.output", "24 kW", "common practice, no source";
+    COMPARED_YEARS = "lifetime.years", "20 years", "common practice, no source";
+    DISCOUNT_RATE = "lifetime.discount_rate", "3.5 %",
+        "real social rate of the UK Treasury's Green Book (from memory)";
+    ELECTRICITY_CHANGE = "lifetime.electricity_change", "0 %", "no forecast: prices stay as they are above inflation";
+    GAS_CHANGE = "lifetime.gas_change", "0 %", "no forecast: prices stay as they are above inflation";
+    ELECTRICITY_CARBON_CHANGE = "lifetime.electricity_carbon_change", "0 %",
+        "no forecast: carbon stays as it is";
+    MACHINE_LIFE = "choice.outlay.machine_life", "20 years", "common practice, no source";
+    BOILER_LIFE = "outlay.machine_life of a boiler", "15 years", "common practice, no source";
+    LOOP_LIFE = "choice.outlay.loop_life", "50 years", "common practice, no source";
+    EMITTERS_LIFE = "choice.outlay.emitters_life", "30 years", "common practice, no source";
+    STORE_LIFE = "choice.outlay.store_life", "25 years", "common practice, no source";
+    INSTALLATION_LIFE = "life of the installation work", "50 years", "it is done once: common practice, no source";
+    DUE_IN = "today.outlay.due_in", "8 years", "about half a boiler's life: common practice, no source";
     BACKUP_BAND = "backup starts below the set point by", "0.5 K", "common practice, no source";
 }

@@ -5,6 +5,7 @@ mod demo;
 mod energy;
 mod files;
 mod home;
+mod lifetime;
 mod machine;
 mod notes;
 mod raw;

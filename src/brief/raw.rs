@@ -3,12 +3,13 @@
 use schemars::JsonSchema;
 use serde::Deserialize;
 
+use super::lifetime::{LifetimeTable, OutlayTable};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind};
 use crate::units::{
     Area, CarbonFactor, Diffusivity, Duration, Energy, HeatLossCoefficient, Length, LoopResistance,
-    Power, Share, Temperature, TemperatureDifference, WaterVolume,
+    Money, Power, Share, Temperature, TemperatureDifference, WaterVolume,
 };
 
 /// A home, its weather, its energy, what heats it today and the choices.
@@ -20,6 +21,8 @@ pub(super) struct Brief {
     pub weather: Option<Section<Weather>>,
     /// Tariffs and carbon.
     pub energy: Option<Section<Energies>>,
+    /// How the years of a system's life are counted.
+    pub lifetime: Option<Section<LifetimeTable>>,
     /// What heats the home today.
     pub today: Option<Section<SystemTable>>,
     /// What could heat it instead, one table a choice.
@@ -211,8 +214,10 @@ pub(super) struct SystemTable {
 
     /// Something else in the home still burns gas, so that its standing charge stays.
     pub keeps_gas: Option<Leaf<bool>>,
-    /// What it costs to put in.
-    pub capital: Option<Leaf<String>>,
+    /// What it costs to put in; or give its parts in a table outlay.
+    pub capital: Option<Leaf<Money>>,
+    /// What it costs to put in and to keep, by part.
+    pub outlay: Option<Section<OutlayTable>>,
 
     /// Another heat-loss coefficient, when insulating is part of the choice; the emitters stay as they are.
     pub heat_loss: Option<Leaf<HeatLossCoefficient>>,

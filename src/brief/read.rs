@@ -10,6 +10,7 @@ use schemars::Schema;
 use super::energy::{Energy, energy};
 use super::files::Folder;
 use super::home::WeatherFacts;
+use super::lifetime::terms;
 use super::notes::Notes;
 use super::raw;
 use super::system::{Surroundings, contender};
@@ -121,6 +122,8 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             }
         }
     }
+    let told = raw.choice.iter().any(|choice| choice.capital.is_some() || choice.outlay.is_some());
+    let terms = terms(raw.lifetime.as_ref(), told, check, &mut notes);
     let Energy {
         currency,
         carbon_scope,
@@ -128,12 +131,7 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     } = energy?;
     let (weather, site, zone) = (weather?, site?, zone?);
     Some(Brief {
-        case: Case {
-            site,
-            time_zone: zone,
-            currency,
-            contenders,
-        },
+        case: Case::new(site, zone, currency, terms?, contenders),
         told: Told {
             home_label: label,
             weather_file: weather.file,

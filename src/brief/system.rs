@@ -1,10 +1,11 @@
 //! From a system's table to a contender of the case.
 
-use rust_decimal::prelude::ToPrimitive as _;
+use std::sync::Arc;
 
 use super::defaults;
 use super::energy::{Energy, Supply};
 use super::files::Folder;
+use super::lifetime::outlay;
 use super::home::{Warm, WeatherFacts, warm_side};
 use super::machine::{MachineMade, machine};
 use super::notes::Notes;
@@ -16,7 +17,7 @@ use crate::plan::steady;
 use crate::problem::Finding;
 use crate::source::{AnnualSwing, GroundLoop, Source, undisturbed_c};
 use crate::study::Contender;
-use crate::units::{Money, TemperatureDifference, parse};
+use crate::units::{TemperatureDifference, parse};
 use crate::year::{Heating, MachineSystem, Site, System};
 
 /// What a system is put into.
@@ -60,7 +61,8 @@ pub(super) fn contender(
     let kind = kind.map(|(kind,)| kind);
     let warm = warm_side(around.home, table, kind, around.facts, check, notes);
     let keeps_gas = check.value(&table.keeps_gas);
-    let capital = capital(table, around.energy, check);
+    let currency = around.energy.map(|energy| energy.currency);
+    let outlay = outlay(table, kind, around.today, currency, check, notes);
     let kind = kind?;
     only_its_own_fields(table, kind, check);
     let heating = match kind {
@@ -113,46 +115,16 @@ pub(super) fn contender(
                 home: warm.home,
                 heating,
             },
-            plan,
+            plan: Arc::new(plan),
             electricity: energy.electricity.account.clone(),
             fuel: gas.map(|Supply { account, .. }| account.clone()),
             indoor_c: warm.indoor_c,
             design_outdoor_c: warm.design_outdoor_c,
-            capital: capital?,
+            outlay: outlay?,
         },
         machine,
         findings,
     })
-}
-
-/// Money for the parts; nothing when it is wrong, nothing inside when it is not given.
-#[allow(
-    clippy::option_option,
-    reason = "outer: could not be read; inner: not given"
-)]
-fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> Option<Option<f64>> {
-    let Some(leaf) = &table.capital else {
-        return Some(None);
-    };
-    let text = check.value(&table.capital)?;
-    let money = match Money::parse(&text) {
-        Ok(money) => money,
-        Err(problem) => {
-            check.refuse(&leaf.span(), problem.found, problem.allowed, problem.remedy);
-            return None;
-        }
-    };
-    let currency = energy?.currency;
-    if money.currency != currency {
-        check.refuse(
-            &leaf.span(),
-            format!("{money}"),
-            format!("an amount in {currency}, as the tariffs are"),
-            "convert it",
-        );
-        return None;
-    }
-    Some(money.amount.to_f64())
 }
 
 fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<Heating> {

@@ -9,6 +9,7 @@ mod estimate;
 mod failure;
 mod files;
 mod output;
+mod study;
 mod tariff;
 
 use std::process::ExitCode;
@@ -35,6 +36,7 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Estimate(estimate::Args),
+    Study(study::Args),
     Cycle(cycle::Args),
     Tariff(tariff::Args),
 }
@@ -51,6 +53,7 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
+        Command::Study(args) => study::run(args),
         Command::Cycle(args) => cycle::run(args),
         Command::Tariff(args) => tariff::run(args),
     }

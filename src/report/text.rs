@@ -6,7 +6,7 @@ use super::table::plain_table_within;
 use crate::answer::{Estimate, LeverAnswer, SystemAnswer};
 
 /// Width of everything that is printed, characters.
-const WIDTH: u16 = 80;
+pub(super) const WIDTH: u16 = 80;
 /// Systems beside each other, today's among them.
 const SYSTEMS_ABREAST: usize = 4;
 
@@ -198,7 +198,7 @@ fn assumptions(estimate: &Estimate, sources: bool) -> String {
     wrapped(&text, "", "  ")
 }
 
-fn wrapped(text: &str, first: &str, others: &str) -> String {
+pub(super) fn wrapped(text: &str, first: &str, others: &str) -> String {
     let options = textwrap::Options::new(usize::from(WIDTH))
         .initial_indent(first)
         .subsequent_indent(others);

@@ -50,21 +50,25 @@ impl Surplus<'_> {
             .fabric
             .design_load_kw(self.indoor_c, outdoor_c)
             .max(0.0);
-        let cold = match &self.machine.source {
-            Source::OutdoorAir => ColdSide {
-                open_c: outdoor_c,
-                k_per_kw: 0.0,
-                relative_humidity: None,
-            },
-            // A cold night meets the ground at its coldest.
-            Source::Ground(ground) => ColdSide {
-                open_c: self.machine.source.lowest_c(&[]),
-                k_per_kw: ground.resistance_k_per_kw,
-                relative_humidity: None,
-            },
-        };
+        let cold = coldest(self.machine, outdoor_c);
         let flow_c = home.emitters.at_load(load_kw, self.indoor_c).flow_c;
         self.machine.machine.greatest_output_kw(&cold, flow_c) - load_kw - self.water_kw
+    }
+}
+
+/// What a machine draws on in a cold night: the air of that night, or the ground at its coldest.
+pub(super) fn coldest(machine: &MachineSystem, outdoor_c: f64) -> ColdSide {
+    match &machine.source {
+        Source::OutdoorAir => ColdSide {
+            open_c: outdoor_c,
+            k_per_kw: 0.0,
+            relative_humidity: None,
+        },
+        Source::Ground(ground) => ColdSide {
+            open_c: machine.source.lowest_c(&[]),
+            k_per_kw: ground.resistance_k_per_kw,
+            relative_humidity: None,
+        },
     }
 }
 

@@ -1,0 +1,116 @@
+//! How each lever acts on the contenders of a case.
+
+use std::sync::Arc;
+
+use super::case::{Account, Contender};
+use super::lever::Lever;
+use crate::source::Source;
+use crate::year::{Heating, Plan, Signal};
+
+impl Lever {
+    /// Acts on contenders that stand as the brief put them. What belongs to the home or the supply moves for every system, what
+    /// belongs to a choice for that choice alone. The value has been checked.
+    pub(super) fn act(self, value: f64, contenders: &mut [Contender], choice: usize) {
+        match self {
+            Self::ElectricityRate => {
+                for contender in contenders {
+                    contender.electricity = scaled(&contender.electricity, value);
+                    times(&mut plan(contender).electricity.price, value);
+                }
+            }
+            Self::FuelRate => {
+                for contender in contenders {
+                    contender.fuel = contender.fuel.as_ref().map(|fuel| scaled(fuel, value));
+                    if let Some(Signal { price, .. }) = &mut plan(contender).fuel {
+                        times(price, value);
+                    }
+                }
+            }
+            Self::ElectricityCarbon => {
+                for contender in contenders {
+                    times(&mut plan(contender).electricity.carbon_kg, value);
+                }
+            }
+            Self::HeatLoss => {
+                for contender in contenders {
+                    let fabric = &mut contender.system.home.fabric;
+                    *fabric = fabric.with_heat_loss(fabric.heat_loss_w_per_k() * value);
+                }
+            }
+            Self::HotWater => {
+                for contender in contenders {
+                    if let Some(water) = &mut contender.system.home.hot_water {
+                        water.daily_kwh *= value;
+                    }
+                }
+            }
+            Self::Indoor => {
+                let warmer_k = contenders.get(choice).map_or(0.0, |contender| value - contender.indoor_c);
+                for contender in contenders {
+                    contender.indoor_c += warmer_k;
+                    let plan = plan(contender);
+                    for set_point_c in plan.set_point_c.iter_mut().chain(&mut plan.backup_below_c) {
+                        *set_point_c += warmer_k;
+                    }
+                }
+            }
+            Self::FlowTemperature
+            | Self::RatedOutput
+            | Self::FieldFactor
+            | Self::LoopResistance
+            | Self::Capital
+            | Self::Grant => {
+                if let Some(contender) = contenders.get_mut(choice) {
+                    self.act_on(value, contender);
+                }
+            }
+        }
+    }
+
+    /// Acts on one choice.
+    fn act_on(self, value: f64, contender: &mut Contender) {
+        match (self, &mut contender.system.heating) {
+            (Self::FlowTemperature, _) => {
+                let emitters = &mut contender.system.home.emitters;
+                *emitters = emitters.with_design_flow(value, contender.indoor_c);
+            }
+            (Self::RatedOutput, Heating::HeatPump(system)) => {
+                system.machine = system.machine.scaled_to(value);
+            }
+            (Self::FieldFactor, Heating::HeatPump(system)) => {
+                system.machine = system.machine.with_field_factor(value);
+            }
+            (Self::LoopResistance, Heating::HeatPump(system)) => {
+                if let Source::Ground(ground) = &mut system.source {
+                    ground.resistance_k_per_kw *= value;
+                }
+            }
+            (Self::Capital, _) => {
+                contender.outlay = contender.outlay.as_ref().map(|outlay| outlay.with_capital(value));
+            }
+            (Self::Grant, _) => {
+                if let Some(outlay) = &mut contender.outlay {
+                    outlay.grant = value;
+                }
+            }
+            _ => {}
+        }
+    }
+}
+
+/// The plan, made the contender's own.
+fn plan(contender: &mut Contender) -> &mut Plan {
+    Arc::make_mut(&mut contender.plan)
+}
+
+fn times(column: &mut [f64], factor: f64) {
+    column.iter_mut().for_each(|value| *value *= factor);
+}
+
+/// The same account with every price of a kilowatt-hour multiplied; meters and readings do not depend on rates.
+fn scaled(account: &Account, factor: f64) -> Account {
+    Account {
+        tariff: Arc::new(account.tariff.with_energy_times(factor)),
+        meter: Arc::clone(&account.meter),
+    }
+}
