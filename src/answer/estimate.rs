@@ -189,6 +189,11 @@ pub struct LeverAnswer {
     pub between: [f64; 2],
     /// Each value in words: "electricity 4 % cheaper".
     pub conditions: Vec<String>,
+    /// What holds beside each value: "cheaper below that".
+    pub sides: Vec<String>,
+    /// How it stays over the whole range where there is no such value: "dearer"; absent where there is one.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub stays: Option<String>,
     /// The same as a sentence.
     pub sentence: String,
 }

@@ -5,24 +5,76 @@ use rust_decimal::prelude::FromPrimitive;
 
 use super::estimate::LeverAnswer;
 use crate::source::Source;
-use crate::study::{Account, BreakEven, Lever, Measure, Pair};
+use crate::study::{Account, BreakEven, Crossing, Lever, Measure, Pair};
+use crate::units::Currency;
 use crate::year::Heating;
 
 /// One lever of one choice by one measure.
 pub(super) fn lever_answer(found: &BreakEven, pair: &Pair) -> LeverAnswer {
     let label = &pair.choice().system.label;
     let unit = unit(found.lever, pair);
+    let words = Words::of(found.measure);
     let values: Vec<f64> = found.crossings.iter().map(|crossing| crossing.value).collect();
     let conditions: Vec<_> = values.iter().map(|&value| condition(found.lever, found.now, value, pair)).collect();
+    let side = |crossing: &Crossing| {
+        let side = if crossing.better_above { "above" } else { "below" };
+        format!("{} {side} that", words.better)
+    };
+    let sides: Vec<String> = found.crossings.iter().map(side).collect();
+    let better = found.more.iter().all(|(_, more)| *more <= 0.0);
+    let stays = if better { words.better } else { words.worse };
+    let range = &found.range;
+    let sentence = if values.is_empty() {
+        let between = format!("{} from {} to {} {unit}", range.label, short(range.low), short(range.high));
+        format!("No {} makes \"{label}\" {}: it stays {stays}.", between.trim_end(), words.equals)
+    } else {
+        let each: Vec<_> = conditions.iter().zip(&sides).map(|(value, side)| format!("{value}; it is {side}")).collect();
+        format!("\"{label}\" {} with {}.", words.even, each.join(", and again with "))
+    };
     LeverAnswer {
-        sentence: sentence(found, label, &unit, &conditions),
         lever: found.lever.name().to_owned(),
         unit,
         measure: found.measure.name().to_owned(),
         now: found.now,
+        stays: values.is_empty().then(|| stays.to_owned()),
         values,
-        between: [found.range.low, found.range.high],
+        between: [range.low, range.high],
         conditions,
+        sides,
+        sentence,
+    }
+}
+
+/// How a measure is said.
+struct Words {
+    equals: &'static str,
+    even: &'static str,
+    better: &'static str,
+    worse: &'static str,
+}
+
+impl Words {
+    fn of(measure: Measure) -> Self {
+        match measure {
+            Measure::YearlyCost => Self {
+                equals: "cost as much a year as today's system",
+                even: "breaks even",
+                better: "cheaper",
+                worse: "dearer",
+            },
+            Measure::LifetimeCost => Self {
+                equals: "cost as much over the years as today's system",
+                even: "breaks even over the years",
+                better: "cheaper",
+                worse: "dearer",
+            },
+            Measure::Carbon => Self {
+                equals: "emit as much as today's system",
+                even: "emits as much as today's system",
+                better: "lower in carbon",
+                worse: "higher in carbon",
+            },
+        }
     }
 }
 
@@ -35,34 +87,17 @@ pub(super) fn unit(lever: Lever, pair: &Pair) -> String {
     }
 }
 
-fn sentence(found: &BreakEven, label: &str, unit: &str, conditions: &[String]) -> String {
-    let (equals, better, worse, even) = match found.measure {
-        Measure::YearlyCost => ("cost as much a year as today's system", "cheaper", "dearer", "breaks even"),
-        Measure::LifetimeCost => (
-            "cost as much over the years as today's system",
-            "cheaper",
-            "dearer",
-            "breaks even over the years",
-        ),
-        Measure::Carbon => ("emit as much as today's system", "lower in carbon", "higher in carbon", "emits as much as today's system"),
-    };
-    if conditions.is_empty() {
-        let range = &found.range;
-        let stays = if found.more.iter().all(|(_, more)| *more <= 0.0) { better } else { worse };
-        let between = format!("{} from {} to {} {unit}", found.lever.name(), short(range.low), short(range.high));
-        let between = between.trim_end();
-        return format!("No {between} makes \"{label}\" {equals}: it stays {stays}.");
+/// How prices of a kilowatt-hour are said in a currency: multiples of its unit, and the words for it; 100 and "p/kWh".
+pub(super) fn price_unit(currency: Currency) -> (f64, String) {
+    let tenth = currency.price_words(Decimal::new(1, 1), "kWh");
+    match tenth.split_once(' ') {
+        Some((number, unit)) if number.starts_with("10.") => (100.0, unit.to_owned()),
+        _ => (1.0, format!("{}/kWh", currency.code())),
     }
-    let sides = found.crossings.iter().zip(conditions).map(|(crossing, condition)| {
-        let side = if crossing.better_above { "above" } else { "below" };
-        format!("{condition}; {side} that it is {better}")
-    });
-    let sides: Vec<_> = sides.collect();
-    format!("\"{label}\" {even} with {}.", sides.join(", and again with "))
 }
 
 /// A number without decimals that say nothing.
-pub(super) fn short(value: f64) -> String {
+pub fn short(value: f64) -> String {
     let digits = if value.abs() >= 100.0 { 0 } else if value.abs() >= 10.0 { 1 } else { 2 };
     let text = format!("{value:.digits$}");
     if text.contains('.') {
@@ -140,7 +175,7 @@ fn rates(account: &Account, factor: f64) -> Option<String> {
 
 #[cfg(test)]
 mod tests {
-    use super::short;
+    use super::*;
 
     #[test]
     fn numbers_are_said_without_idle_decimals() {
@@ -149,5 +184,12 @@ mod tests {
         assert_eq!(short(12.34), "12.3");
         assert_eq!(short(11_400.0), "11400");
         assert_eq!(short(100.0), "100");
+    }
+
+    #[test]
+    fn prices_are_in_the_sub_unit_where_one_is_usual() {
+        let unit = |code: &str| price_unit(Currency::parse(code).unwrap());
+        assert_eq!(unit("GBP"), (100.0, "p/kWh".to_owned()));
+        assert_eq!(unit("JPY"), (1.0, "JPY/kWh".to_owned()));
     }
 }

@@ -9,6 +9,7 @@ pub mod study;
 pub mod tariff;
 
 pub use compose::{Told, compose};
+pub use lever::short;
 pub use estimate::{
     Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };

@@ -4,7 +4,7 @@ use serde::Serialize;
 
 use super::compose::Told;
 use super::estimate::{Assumption, LeverAnswer};
-use super::lever::{condition, lever_answer, unit};
+use super::lever::{condition, lever_answer, price_unit, unit};
 use super::lifetime::{LifetimeAnswer, lifetime};
 use crate::problem::{Finding, Problems};
 use crate::study::{
@@ -161,6 +161,9 @@ pub struct AxisAnswer {
     /// The mean price of a kilowatt-hour where the lever stands, tax included; only for prices.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub price_now: Option<f64>,
+    /// The unit of that price.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub price_unit: Option<String>,
 }
 
 /// One lever from low to high.
@@ -323,7 +326,12 @@ fn sizes_in_words(pair: &Pair, sizes: &MachineSizes) -> String {
     };
     let code = pair.case().currency.code();
     let at = |kw: f64| sizes.sizes.iter().find(|size| size.rated_kw == kw);
-    let mut words = format!("From {first:.1} to {last:.1} kW the size hardly matters for the bill");
+    let largest = sizes.sizes.last().map(|size| size.rated_kw);
+    let mut words = if largest == Some(last) {
+        format!("From {first:.1} kW up the size hardly matters for the bill")
+    } else {
+        format!("From {first:.1} to {last:.1} kW the size hardly matters for the bill")
+    };
     let smaller = sizes.sizes.iter().rev().find(|size| size.rated_kw < first);
     let larger = sizes.sizes.iter().find(|size| size.rated_kw > last);
     if let (Some(smaller), Some(first)) = (smaller, at(first)) {
@@ -357,12 +365,17 @@ fn sizes_in_words(pair: &Pair, sizes: &MachineSizes) -> String {
 
 fn together(pair: &Pair, wish: &Wish) -> Result<TwoLeversAnswer, Problems> {
     let grid = two_levers(pair, wish.together.0, wish.together.1, wish.steps)?;
-    let axis = |(lever, values): (Lever, Vec<f64>), now| AxisAnswer {
-        lever: lever.name().to_owned(),
-        unit: unit(lever, pair),
-        now,
-        values,
-        price_now: price_now(lever, pair),
+    let (times, price_unit) = price_unit(pair.case().currency);
+    let axis = |(lever, values): (Lever, Vec<f64>), now| {
+        let price_now = price_now(lever, pair).map(|price| price * times);
+        AxisAnswer {
+            lever: lever.name().to_owned(),
+            unit: unit(lever, pair),
+            now,
+            values,
+            price_unit: price_now.map(|_| price_unit.clone()),
+            price_now,
+        }
     };
     Ok(TwoLeversAnswer {
         x: axis(grid.x, grid.now.0),

@@ -80,14 +80,13 @@ pub fn emitter_study(data: &EmitterStudy, marks: &Marks) -> Result<Picture, Char
         "SPF with all auxiliaries (no unit)".to_owned(),
         "Output the emitters need, times today’s (EN 442, ΔT 50 K)".to_owned(),
     ];
-    let least_span = [0.0, 0.0, 1.0];
     let mut y = top;
     let mut frames = Vec::new();
     for (i, ((line, title), height)) in lines.iter().zip(&titles).zip(PANELS).enumerate() {
         let ends = line.iter().fold((f64::INFINITY, f64::NEG_INFINITY), |(l, h), p| (l.min(p.1), h.max(p.1)));
         let (low, high) = match i {
             0 => (ends.0.min(0.0), ends.1.max(0.0)),
-            2 => (0.0, ends.1.max(least_span[2])),
+            2 => (0.0, ends.1.max(1.0)),
             _ => ends,
         };
         let below = if i == 2 { 0.0 } else { super::frame::BELOW - 12.0 };
@@ -153,7 +152,8 @@ fn label(scene: &mut Scene, frames: &[Frame], data: &EmitterStudy, marks: &Marks
         let text = format!("breaks even at {}\u{a0}°C", marks.number(crossing, 1));
         scene.place_for(&saving.area, (x, y), &text, &around(x, y, 11.0), strong);
     }
-    for step in data.steps.iter().step_by(2) {
+    // The first point stands at the edge, where a label would cover the line.
+    for step in data.steps.iter().skip(2).step_by(2) {
         times.note(scene, &format!("×\u{a0}{}", marks.number(step.times_today, 2)), step.flow_c, step.times_today);
         if let Some(value) = step.spf_h4 {
             spf.note(scene, &marks.number(value, 2), step.flow_c, value);

@@ -189,11 +189,7 @@ fn two_levers(choice: &ChoiceStudy, currency: &str) -> Contours {
     let scale = |axis: &AxisAnswer, price: Option<f64>| {
         let factor = price.unwrap_or(1.0);
         let values: Vec<f64> = axis.values.iter().map(|value| value * factor).collect();
-        let unit = if price.is_some() {
-            format!("{currency}/kWh")
-        } else {
-            axis.unit.clone()
-        };
+        let unit = axis.price_unit.as_ref().filter(|_| price.is_some()).unwrap_or(&axis.unit).clone();
         (values, axis.now * factor, (sentence_case(&axis.lever), unit))
     };
     let (x_values, x_now, x_name) = scale(x, prices.map(|prices| prices.0));

@@ -67,8 +67,7 @@ impl CashFlow {
                 .parts
                 .iter()
                 .filter(|part| part.is_bought(year, last))
-                .map(|part| part.amount)
-                .sum();
+                .fold(0.0, |sum, part| sum + part.amount);
             let mut flow = YearFlow {
                 year,
                 capital,

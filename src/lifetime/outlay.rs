@@ -45,7 +45,8 @@ impl Outlay {
     /// What is paid at the beginning, before the grant.
     pub fn capital(&self) -> f64 {
         let now = self.parts.iter().filter(|part| part.due_in == 0);
-        now.map(|part| part.amount).sum()
+        // An empty sum of floats is −0, which would be printed with its sign.
+        now.fold(0.0, |sum, part| sum + part.amount)
     }
 
     /// The same with another capital, its parts in the same proportions; nothing to scale where there is none.

@@ -2,7 +2,7 @@
 
 use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
-use crate::answer::LeverAnswer;
+use crate::answer::{LeverAnswer, short};
 use crate::answer::lifetime::LifetimeAnswer;
 use crate::answer::study::{ChoiceStudy, EmitterAnswer, SizesAnswer, StudyAnswer, SwingAnswer};
 
@@ -46,11 +46,31 @@ fn choice_text(choice: &ChoiceStudy, currency: &str) -> String {
     blocks.join("\n\n")
 }
 
-/// Those that break even as sentences; the others in one.
+/// Those that break even, a line each; the others in one sentence.
 fn levers_text(levers: &[&LeverAnswer]) -> String {
-    let (found, none): (Vec<&LeverAnswer>, Vec<&LeverAnswer>) = levers.iter().partition(|lever| !lever.values.is_empty());
-    let mut lines: Vec<String> = found.iter().map(|lever| wrapped(&lever.sentence, "  ", "    ")).collect();
-    lines.extend(none.iter().map(|lever| wrapped(&lever.sentence, "  ", "    ")));
+    let mut lines = Vec::new();
+    let mut stays: Vec<(&str, Vec<&LeverAnswer>)> = Vec::new();
+    for lever in levers {
+        for (condition, side) in lever.conditions.iter().zip(&lever.sides) {
+            lines.push(wrapped(&format!("{condition}: {side}"), "  ", "      "));
+        }
+        if let Some(how) = &lever.stays {
+            match stays.iter_mut().find(|(same, _)| same == how) {
+                Some((_, same)) => same.push(lever),
+                None => stays.push((how, vec![lever])),
+            }
+        }
+    }
+    for (how, levers) in stays {
+        let ranges: Vec<_> = levers
+            .iter()
+            .map(|lever| {
+                let [low, high] = lever.between.map(short);
+                format!("{} from {low} to {high} {}", lever.lever, lever.unit).trim_end().to_owned()
+            })
+            .collect();
+        lines.push(wrapped(&format!("It stays {how} with {}.", ranges.join(", ")), "  ", "    "));
+    }
     lines.join("\n")
 }
 
