@@ -8,6 +8,7 @@ use super::estimate::{
 use super::lever::lever_answer;
 use crate::lifetime::Outlay;
 use crate::problem::{Finding, Problems, Severity};
+use crate::source::Memory;
 use crate::study::{
     BalancePoint, Case, Contender, Lever, Measure, Outcome, Pair, balance_point, break_even,
 };
@@ -99,12 +100,16 @@ fn system(
     let sums = outcome.mean_sums();
     let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
     let burns_fuel = matches!(contender.system.heating, Heating::Boiler { .. });
+    let ground = contender
+        .aged
+        .map_or_else(Memory::default, |aged| aged.memory);
     let balance = |with_hot_water| match &contender.system.heating {
         Heating::HeatPump(machine) => balance_point(
             &contender.system,
             machine,
             contender.indoor_c,
             with_hot_water,
+            ground,
         ),
         _ => None,
     };

@@ -142,12 +142,13 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
             let absolute = match &choice.system.heating {
                 Heating::HeatPump(system) => match &system.source {
                     Source::Ground(ground) => Some(format!("{:.2} K/kW", ground.resistance_k_per_kw * value)),
-                    Source::OutdoorAir => None,
+                    _ => None,
                 },
                 _ => None,
             };
             times("a loop resistance", "larger", "smaller", absolute)
         }
+        Lever::LoopLength => format!("a loop of {value:.0} m (now {now:.0} m)"),
         Lever::Capital => format!("a capital of {value:.0} {code} (now {now:.0} {code})"),
         Lever::Grant => format!("a grant of {value:.0} {code} (now {now:.0} {code})"),
         Lever::ElectricityCarbon => times("the carbon of electricity", "higher", "lower", None),

@@ -6,6 +6,9 @@ mod estimate;
 mod lever;
 pub mod lifetime;
 pub mod study;
+pub mod explain;
+pub mod machine;
+pub mod rating;
 pub mod tariff;
 
 pub use compose::{Told, compose};

@@ -4,6 +4,7 @@ mod defaults;
 mod demo;
 mod energy;
 mod files;
+mod ground;
 mod home;
 mod lifetime;
 mod machine;

@@ -130,8 +130,10 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         ..
     } = energy?;
     let (weather, site, zone) = (weather?, site?, zone?);
+    let mut case = Case::new(site, zone, currency, terms?, contenders);
+    case.age_grounds();
     Some(Brief {
-        case: Case::new(site, zone, currency, terms?, contenders),
+        case,
         told: Told {
             home_label: label,
             weather_file: weather.file,

@@ -6,10 +6,13 @@
 
 mod cycle;
 mod estimate;
+mod explain;
 mod failure;
 mod files;
+mod machine;
 mod output;
 mod study;
+mod rating;
 mod tariff;
 
 use std::process::ExitCode;
@@ -37,7 +40,10 @@ struct Arguments {
 enum Command {
     Estimate(estimate::Args),
     Study(study::Args),
+    Explain(explain::Args),
     Cycle(cycle::Args),
+    Machine(machine::Args),
+    Rating(rating::Args),
     Tariff(tariff::Args),
 }
 
@@ -54,7 +60,10 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
         Command::Study(args) => study::run(args),
+        Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
+        Command::Machine(args) => machine::run(args),
+        Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
     }
 }

@@ -31,8 +31,8 @@ Examples:
   winterledger study --over \"heat loss\" --against \"design flow temperature\" --out out
 
 Levers: electricity rate, gas rate, heat loss, design flow temperature, indoor temperature,
-hot water, rated output, share of laboratory performance kept, loop resistance, capital,
-grant, carbon of electricity.")]
+hot water, rated output, share of laboratory performance kept, loop resistance, loop length,
+capital, grant, carbon of electricity.")]
 pub struct Args {
     /// Brief (TOML); without one, the built-in demonstration home.
     brief: Option<PathBuf>,

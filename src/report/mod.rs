@@ -1,10 +1,12 @@
 //! Answers as text and files.
 
+mod explain;
 mod ledger;
 mod study;
 mod table;
 mod text;
 
+pub use explain::explain_text;
 pub use ledger::{ledger_csv, ledger_legend};
 pub use study::study_text;
 pub use table::{plain_table, plain_table_within};

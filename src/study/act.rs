@@ -3,14 +3,28 @@
 use std::sync::Arc;
 
 use super::case::{Account, Contender};
-use super::lever::Lever;
+use super::lever::{Again, Lever};
+use crate::problem::{Place, Problem, Problems};
 use crate::source::Source;
 use crate::year::{Heating, Plan, Signal};
 
 impl Lever {
     /// Acts on contenders that stand as the brief put them. What belongs to the home or the supply moves for every system, what
-    /// belongs to a choice for that choice alone. The value has been checked.
-    pub(super) fn act(self, value: f64, contenders: &mut [Contender], choice: usize) {
+    /// belongs to a choice for that choice alone. The value has been checked; `hours` are those of the axis.
+    ///
+    /// # Errors
+    /// A loop of another length whose response cannot be made.
+    pub(super) fn act(
+        self,
+        value: f64,
+        contenders: &mut [Contender],
+        choice: usize,
+        hours: usize,
+    ) -> Result<(), Problems> {
+        // Bills and carbon draw nothing from the ground.
+        if self.again() == Again::Everyone {
+            contenders.iter_mut().for_each(Contender::moved);
+        }
         match self {
             Self::ElectricityRate => {
                 for contender in contenders {
@@ -58,17 +72,22 @@ impl Lever {
             | Self::RatedOutput
             | Self::FieldFactor
             | Self::LoopResistance
+            | Self::LoopLength
             | Self::Capital
             | Self::Grant => {
                 if let Some(contender) = contenders.get_mut(choice) {
-                    self.act_on(value, contender);
+                    if self.again() == Again::Choice {
+                        contender.moved();
+                    }
+                    self.act_on(value, contender, hours)?;
                 }
             }
         }
+        Ok(())
     }
 
     /// Acts on one choice.
-    fn act_on(self, value: f64, contender: &mut Contender) {
+    fn act_on(self, value: f64, contender: &mut Contender, hours: usize) -> Result<(), Problems> {
         match (self, &mut contender.system.heating) {
             (Self::FlowTemperature, _) => {
                 let emitters = &mut contender.system.home.emitters;
@@ -85,6 +104,15 @@ impl Lever {
                     ground.resistance_k_per_kw *= value;
                 }
             }
+            (Self::LoopLength, Heating::HeatPump(system)) => {
+                if let Source::Buried(buried) = &mut system.source {
+                    let built = buried.design.with_length(value).build(hours);
+                    **buried = built.map_err(|error| {
+                        let place = Place::field(self.name());
+                        Problem::new(place, format!("a loop of {value:.0} m: {}", error.why), "a loop whose response can be made", "give another length")
+                    })?;
+                }
+            }
             (Self::Capital, _) => {
                 contender.outlay = contender.outlay.as_ref().map(|outlay| outlay.with_capital(value));
             }
@@ -95,6 +123,7 @@ impl Lever {
             }
             _ => {}
         }
+        Ok(())
     }
 }
 

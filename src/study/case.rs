@@ -4,12 +4,14 @@ use std::sync::Arc;
 
 use chrono_tz::Tz;
 
+use super::ageing::Aged;
 use super::fuel_carbon::{Both, CarbonOfFuel};
 use super::lever::Lever;
 use super::outcome::{Outcome, YearOutcome, price};
 use crate::bill::Connection;
 use crate::lifetime::{Outlay, Terms};
 use crate::problem::Problems;
+use crate::source::Memory;
 use crate::tariff::{Meter, Tariff};
 use crate::units::Currency;
 use crate::year::{Ledger, Metered, Plan, Site, State, System, Totals, run};
@@ -69,6 +71,10 @@ pub struct Contender {
     pub design_outdoor_c: f64,
     /// What it costs to put in and to keep, in the case's currency, as far as it is known.
     pub outlay: Option<Outlay>,
+    /// Year of a buried loop's life that is shown, from 1.
+    pub shown_year: u32,
+    /// The ground at the beginning of that year, see [`Case::age_grounds`]; nothing for fresh ground or none.
+    pub aged: Option<Aged>,
 }
 
 impl Case {
@@ -142,10 +148,20 @@ impl Case {
             return Err(problems);
         }
         values.sort_by_key(|(lever, of, _)| (lever.order(), *of));
-        self.contenders = brief.contenders;
+        let hours = self.site.outdoor_c.len();
+        let mut contenders = before.to_vec();
         for &(lever, of, value) in &values {
-            lever.act(value, &mut self.contenders, of);
+            if let Err(problems) = lever.act(value, &mut contenders, of, hours) {
+                self.moved = (!kept.is_empty()).then_some(Moved { before, values: kept });
+                return Err(problems);
+            }
         }
+        // Another loop has another past; otherwise the past is scaled when the year is run.
+        for (_, of, _) in values.iter().filter(|(lever, _, _)| *lever == Lever::LoopLength) {
+            let year = contenders[*of].shown_year;
+            contenders[*of].aged = brief.aged(&contenders[*of], year);
+        }
+        self.contenders = contenders;
         self.moved = (!values.is_empty()).then_some(Moved { before, values });
         Ok(())
     }
@@ -163,16 +179,43 @@ impl Case {
 
     /// Runs one system through every year, keeping its rows in a ledger where one is given.
     ///
+    /// A buried loop begins as earlier years left it. When the system was changed after those were run, their history is
+    /// scaled to what the changed system draws.
+    ///
     /// # Errors
     /// When a bill cannot be made.
     pub fn run_one(
         &self,
         contender: &Contender,
+        ledger: Option<&mut Ledger>,
+    ) -> Result<Outcome, Problems> {
+        let Some(aged) = contender.aged else {
+            return self.run_from(contender, Memory::default(), ledger);
+        };
+        if !aged.moved {
+            return self.run_from(contender, aged.memory, ledger);
+        }
+        let trial = self.run_from(contender, aged.memory, None)?;
+        let drawn_kwh = trial.mean(|year| year.sums.extracted_kwh - year.sums.returned_kwh);
+        self.run_from(contender, aged.for_draw(drawn_kwh), ledger)
+    }
+
+    /// Runs one system through every year from what its ground remembers.
+    ///
+    /// # Errors
+    /// When a bill cannot be made.
+    pub fn run_from(
+        &self,
+        contender: &Contender,
+        ground: Memory,
         mut ledger: Option<&mut Ledger>,
     ) -> Result<Outcome, Problems> {
         let site = &*self.site;
         let (system, plan) = (&contender.system, &contender.plan);
-        let mut state = State::at_rest(system, contender.indoor_c);
+        let mut state = State {
+            ground,
+            ..State::at_rest(system, contender.indoor_c)
+        };
         let mut metered = Metered::new(
             &contender.electricity.meter,
             contender.fuel.as_ref().map(|fuel| &*fuel.meter),

@@ -3,6 +3,7 @@
 use super::case::Case;
 use crate::bounds::{self, Bound};
 use crate::problem::{Place, Problem, Problems};
+use crate::source::{Memory, Source};
 use crate::year::Heating;
 
 /// One quantity that can be moved, everything else staying as it is.
@@ -24,8 +25,10 @@ pub enum Lever {
     RatedOutput,
     /// What the choice's machine keeps of its laboratory performance, as a fraction.
     FieldFactor,
-    /// How far the choice's loop falls for each kilowatt drawn, as a multiple of its design; half the loop is twice of it.
+    /// How far the choice's loop falls for each kilowatt drawn, as a multiple of its design, where the loop is known by that alone.
     LoopResistance,
+    /// Length of the choice's bores or trenches, m, all longer or shorter alike.
+    LoopLength,
     /// What the choice costs to put in, before the grant.
     Capital,
     /// What others pay towards the choice.
@@ -57,6 +60,7 @@ impl Lever {
         Self::RatedOutput,
         Self::FieldFactor,
         Self::LoopResistance,
+        Self::LoopLength,
         Self::Capital,
         Self::Grant,
         Self::ElectricityCarbon,
@@ -74,6 +78,7 @@ impl Lever {
             Self::RatedOutput => "rated output",
             Self::FieldFactor => "share of laboratory performance kept",
             Self::LoopResistance => "loop resistance",
+            Self::LoopLength => "loop length",
             Self::Capital => "capital",
             Self::Grant => "grant",
             Self::ElectricityCarbon => "carbon of electricity",
@@ -91,6 +96,7 @@ impl Lever {
         match self {
             Self::FlowTemperature | Self::Indoor => "°C",
             Self::RatedOutput => "kW",
+            Self::LoopLength => "m",
             Self::FieldFactor | Self::Capital | Self::Grant => "",
             _ => "× today's",
         }
@@ -126,6 +132,7 @@ impl Lever {
             }
             Self::FieldFactor => (0.6, 1.0),
             Self::LoopResistance => (0.25, 4.0),
+            Self::LoopLength => (0.5 * now, 2.0 * now),
             Self::Capital => (0.0, CAPITAL * now),
             Self::Grant => (0.0, contender.outlay.as_ref()?.capital().max(now)),
             Self::ElectricityCarbon => (0.0, 3.0),
@@ -157,6 +164,7 @@ impl Lever {
             Self::RatedOutput => named(bounds::OUTPUT_KW),
             Self::FieldFactor => named(bounds::FIELD_FACTOR),
             Self::HeatLoss | Self::LoopResistance => from_to(0.01, 100.0),
+            Self::LoopLength => from_to(1.0, 10_000.0),
             Self::ElectricityRate | Self::FuelRate | Self::HotWater | Self::ElectricityCarbon => from_to(0.0, 100.0),
             Self::Capital | Self::Grant => from_to(0.0, 1e9),
         }
@@ -169,11 +177,9 @@ impl Lever {
             return None;
         };
         let limits = system.machine.limits();
-        let source_c = match &system.source {
-            crate::source::Source::OutdoorAir => contender.design_outdoor_c,
-            other => other.lowest_c(&case.site.outdoor_c),
-        };
-        Some(limits.highest_flow_at(source_c))
+        let ground = contender.aged.map_or_else(Memory::default, |aged| aged.memory);
+        let coldest = system.source.cold_offer(contender.design_outdoor_c, &ground);
+        Some(limits.highest_flow_at(coldest.open_c))
     }
 
     /// Checks that a choice can have a value of it.
@@ -236,9 +242,13 @@ impl Lever {
             (Self::RatedOutput, Heating::HeatPump(system)) => Some(system.machine.rated_output_kw()),
             (Self::FieldFactor, Heating::HeatPump(system)) => Some(system.machine.field_factor()),
             (Self::LoopResistance, Heating::HeatPump(system)) => {
-                matches!(system.source, crate::source::Source::Ground(_)).then_some(1.0)
+                matches!(system.source, Source::Ground(_)).then_some(1.0)
             }
-            (Self::RatedOutput | Self::FieldFactor | Self::LoopResistance, _) => None,
+            (Self::LoopLength, Heating::HeatPump(system)) => match &system.source {
+                Source::Buried(buried) => Some(buried.length_m()),
+                _ => None,
+            },
+            (Self::RatedOutput | Self::FieldFactor | Self::LoopResistance | Self::LoopLength, _) => None,
             (Self::Capital, _) => contender.outlay.as_ref().map(|outlay| outlay.capital()).filter(|capital| *capital > 0.0),
             (Self::Grant, _) => contender.outlay.as_ref().map(|outlay| outlay.grant),
         };
@@ -249,7 +259,9 @@ impl Lever {
     pub(super) fn again(self) -> Again {
         match self {
             Self::ElectricityRate | Self::FuelRate | Self::Capital | Self::Grant | Self::ElectricityCarbon => Again::Bills,
-            Self::FlowTemperature | Self::RatedOutput | Self::FieldFactor | Self::LoopResistance => Again::Choice,
+            Self::FlowTemperature | Self::RatedOutput | Self::FieldFactor | Self::LoopResistance | Self::LoopLength => {
+                Again::Choice
+            }
             Self::HeatLoss | Self::Indoor | Self::HotWater => Again::Everyone,
         }
     }

@@ -1,12 +1,12 @@
 //! Rated output against what it does: from too small to too large.
 
 use super::balance::coldest;
-use super::case::{Case, Contender};
+use super::case::Contender;
 use super::lever::Lever;
 use super::pair::{CHOICE, Compared, Pair};
 use crate::heatpump::ColdSide;
 use crate::problem::Problems;
-use crate::source::Source;
+use crate::source::Memory;
 use crate::year::{Heating, MachineSystem};
 
 /// Sizes looked at, as multiples of the design heat load. A choice of ours.
@@ -94,8 +94,9 @@ fn size(compared: &Compared, load_kw: f64, mild_kw: f64) -> Option<MachineSize> 
     let [today, outcome] = &compared.outcomes;
     let sums = outcome.mean_sums();
     let heat_kwh = sums.space_heat_kwh() + sums.water_heat_kwh();
-    let cold = coldest(system, contender.design_outdoor_c);
-    let mild = mild_side(system, &compared.case);
+    let ground = contender.aged.map_or_else(Memory::default, |aged| aged.memory);
+    let cold = coldest(system, contender.design_outdoor_c, &ground);
+    let mild = mild_side(system, &ground, compared.case.site.outdoor_c.len());
     let least_kw = system.machine.least_output_kw(&mild, flow_c(contender, mild_kw));
     Some(MachineSize {
         rated_kw: system.machine.rated_output_kw(),
@@ -115,15 +116,14 @@ fn flow_c(contender: &Contender, load_kw: f64) -> f64 {
     contender.system.home.emitters.at_load(load_kw.max(0.0), contender.indoor_c).flow_c
 }
 
-/// What the machine draws on while it is mild outdoors; a loop at the mean of its year.
-fn mild_side(system: &MachineSystem, case: &Case) -> ColdSide {
-    match &system.source {
-        Source::OutdoorAir => coldest(system, MILD_C),
-        Source::Ground(ground) => ColdSide {
-            open_c: ground.undisturbed_c.iter().sum::<f64>() / case.site.outdoor_c.len() as f64,
-            k_per_kw: ground.resistance_k_per_kw,
-            relative_humidity: None,
-        },
+/// What the machine draws on while it is mild outdoors: that air, ground and water at the mean of their year.
+fn mild_side(system: &MachineSystem, ground: &Memory, hours: usize) -> ColdSide {
+    let offers = (0..hours).map(|hour| system.source.offer(hour, MILD_C, ground));
+    let sum = offers.fold((0.0, 0.0), |sum, offer| (sum.0 + offer.open_c, sum.1 + offer.k_per_kw));
+    ColdSide {
+        open_c: sum.0 / hours as f64,
+        k_per_kw: sum.1 / hours as f64,
+        relative_humidity: None,
     }
 }
 

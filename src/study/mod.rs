@@ -5,6 +5,7 @@
 //! levers and what is looked at in the answer.
 
 mod act;
+mod ageing;
 mod balance;
 mod break_even;
 mod break_even_spf;
@@ -19,7 +20,9 @@ mod pair;
 mod spread;
 mod swings;
 mod two_levers;
+mod traced;
 
+pub use ageing::{Aged, SHOWN_YEAR};
 pub use balance::{BalancePoint, balance_point};
 pub use break_even::{BreakEven, Crossing, break_even};
 pub use break_even_spf::{Applies, BreakEvenSpf, Prices, break_even_spf};
@@ -33,3 +36,4 @@ pub use pair::{CHOICE, Compared, Pair, cash_flow};
 pub use spread::{Spread, usual_spread};
 pub use swings::{Swing, swings};
 pub use two_levers::{TwoLevers, two_levers};
+pub use traced::{Traced, TracedDuty, Wanted, trace};

@@ -46,7 +46,7 @@ pub fn usual_spread(lever: Lever, case: &Case) -> Option<Spread> {
         Lever::LoopResistance => times(0.75, 1.4, COMMON),
         Lever::Capital => times(0.85, 1.2, COMMON),
         Lever::ElectricityCarbon => times(0.7, 1.2, COMMON),
-        Lever::RatedOutput | Lever::Grant => return None,
+        Lever::LoopLength | Lever::RatedOutput | Lever::Grant => return None,
     };
     let range = lever.range(case, CHOICE)?;
     let spread = Spread {
