@@ -7,7 +7,9 @@
 use divan::{Bencher, black_box};
 use winterledger::answer::study::{Wish, studies};
 use winterledger::brief::Brief;
-use winterledger::study::{CHOICE, Lever, Measure, Pair, break_even, emitter_sizes, machine_sizes, two_levers};
+use winterledger::study::{
+    CHOICE, Lever, Measure, Pair, break_even, emitter_sizes, machine_sizes, two_levers,
+};
 
 fn main() {
     divan::main();
@@ -36,10 +38,15 @@ fn prices_moved(bencher: Bencher<'_, '_>) {
 #[divan::bench(sample_count = 10)]
 fn seven_break_evens(bencher: Bencher<'_, '_>) {
     let pair = pair(1);
-    let levers = Lever::ALL.iter().filter(|lever| lever.now(pair.case(), CHOICE).is_some()).take(7);
+    let levers = Lever::ALL
+        .iter()
+        .filter(|lever| lever.now(pair.case(), CHOICE).is_some())
+        .take(7);
     let levers: Vec<Lever> = levers.copied().collect();
     bencher.bench_local(|| {
-        let found = levers.iter().map(|&lever| break_even(&pair, lever, &[Measure::YearlyCost]).unwrap());
+        let found = levers
+            .iter()
+            .map(|&lever| break_even(&pair, lever, &[Measure::YearlyCost]).unwrap());
         found.collect::<Vec<_>>()
     });
 }

@@ -11,7 +11,10 @@ fn the_years_agree_with_numpy_financial() {
     let (mut seen, mut paid_back) = (0, 0);
     for row in rows.records() {
         let row = row.unwrap();
-        let field = |name: &str| row.get(header.iter().position(|held| held == name).unwrap()).unwrap();
+        let field = |name: &str| {
+            row.get(header.iter().position(|held| held == name).unwrap())
+                .unwrap()
+        };
         let number = |name: &str| field(name).parse::<f64>().unwrap();
         let whole = |name: &str| field(name).parse::<usize>().unwrap();
         let terms = Terms {
@@ -38,9 +41,14 @@ fn the_years_agree_with_numpy_financial() {
             ..Running::default()
         };
         let choice = CashFlow::of(&terms, &outlay, &running("electricity", "fuel"));
-        let today = CashFlow::of(&terms, &Outlay::default(), &running("today_electricity", "today_fuel"));
+        let today = CashFlow::of(
+            &terms,
+            &Outlay::default(),
+            &running("today_electricity", "today_fuel"),
+        );
         // The same sums in another order: rounding of doubles.
-        let near = |a: f64, b: f64| assert!((a - b).abs() <= 1e-9 * b.abs().max(1.0), "{row:?}: {a} {b}");
+        let near =
+            |a: f64, b: f64| assert!((a - b).abs() <= 1e-9 * b.abs().max(1.0), "{row:?}: {a} {b}");
         near(choice.present_cost(), number("present_value"));
         near(choice.cost_per_kwh_heat().unwrap(), number("levelised"));
         match (payback(&choice, &today), field("payback")) {
@@ -93,5 +101,8 @@ fn terms_that_cannot_be_counted_with_are_told_all_at_once() {
         ..terms
     };
     let told = short.check().unwrap_err().to_string();
-    assert!(told.contains("a path of 12 years for a life of 20 years"), "{told}");
+    assert!(
+        told.contains("a path of 12 years for a life of 20 years"),
+        "{told}"
+    );
 }

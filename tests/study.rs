@@ -7,8 +7,8 @@ use std::sync::OnceLock;
 use assert_cmd::Command;
 use winterledger::brief::Brief;
 use winterledger::study::{
-    CHOICE, Case, Lever, Measure, Outcome, Pair, Prices, break_even, break_even_spf, emitter_sizes, machine_sizes,
-    swings, two_levers,
+    CHOICE, Case, Lever, Measure, Outcome, Pair, Prices, break_even, break_even_spf, emitter_sizes,
+    machine_sizes, swings, two_levers,
 };
 
 fn demonstration() -> &'static (Case, Vec<Outcome>) {
@@ -47,16 +47,25 @@ fn a_lever_moved_and_moved_back_leaves_the_case_bit_identical() {
         let mut case = pair.case().clone();
         let mut moved = Vec::new();
         for &lever in Lever::ALL {
-            let Some((now, value)) = elsewhere(lever, &pair) else { continue };
+            let Some((now, value)) = elsewhere(lever, &pair) else {
+                continue;
+            };
             case.apply(CHOICE, &[(lever, value)]).unwrap();
             assert_eq!(lever.now(&case, CHOICE), Some(value), "{}", lever.name());
             assert_ne!(written(&case), before, "{} does nothing", lever.name());
             case.apply(CHOICE, &[(lever, now)]).unwrap();
-            assert!(written(&case) == before, "{} does not go back", lever.name());
+            assert!(
+                written(&case) == before,
+                "{} does not go back",
+                lever.name()
+            );
             moved.push((lever, now, value));
         }
         // All at once, and back one by one in another order.
-        let all: Vec<_> = moved.iter().map(|&(lever, _, value)| (lever, value)).collect();
+        let all: Vec<_> = moved
+            .iter()
+            .map(|&(lever, _, value)| (lever, value))
+            .collect();
         case.apply(CHOICE, &all).unwrap();
         for &(lever, now, _) in &moved {
             case.apply(CHOICE, &[(lever, now)]).unwrap();
@@ -70,7 +79,11 @@ fn a_lever_moved_and_moved_back_leaves_the_case_bit_identical() {
 #[test]
 fn prices_and_carbon_counted_again_agree_with_a_run() {
     let pair = pair(AIR);
-    for lever in [Lever::ElectricityRate, Lever::FuelRate, Lever::ElectricityCarbon] {
+    for lever in [
+        Lever::ElectricityRate,
+        Lever::FuelRate,
+        Lever::ElectricityCarbon,
+    ] {
         let quick = pair.at(&[(lever, 1.3)]).unwrap();
         let mut case = pair.case().clone();
         case.apply(CHOICE, &[(lever, 1.3)]).unwrap();
@@ -92,17 +105,51 @@ fn each_break_even_put_back_gives_equality_to_a_cent() {
         for &lever in Lever::ALL {
             for answer in break_even(&pair, lever, Measure::ALL).unwrap() {
                 for crossing in &answer.crossings {
-                    let more = pair.at(&[(lever, crossing.value)]).unwrap().more(answer.measure).unwrap();
+                    let more = pair
+                        .at(&[(lever, crossing.value)])
+                        .unwrap()
+                        .more(answer.measure)
+                        .unwrap();
                     // Bills are rounded to a cent; over the years a cent of each of twenty bills can differ.
-                    let cents = if answer.measure == Measure::LifetimeCost { 20.0 } else { 1.0 };
-                    assert!(
-                        more.abs() <= 0.01 * cents + 1e-9,
+                    let cents = if answer.measure == Measure::LifetimeCost {
+                        20.0
+                    } else {
+                        1.0
+                    };
+                    assert_eq!(more, crossing.left);
+                    let told = format!(
                         "{} by {}: {more} at {}",
                         lever.name(),
                         answer.measure.name(),
                         crossing.value
                     );
-                    found += 1;
+                    if more.abs() <= 0.01 * cents + 1e-9 {
+                        found += 1;
+                        continue;
+                    }
+                    // Where a block of hot water moves by an hour the year jumps by some cents, to and fro: then no value gives
+                    // equality, what is left is small, and a hundredth of the range to each side the sign differs.
+                    let hundredth = 0.01 * (answer.range.high - answer.range.low);
+                    let at = |value| {
+                        pair.at(&[(lever, value)])
+                            .unwrap()
+                            .more(answer.measure)
+                            .unwrap()
+                    };
+                    let (below, above) = (
+                        at(crossing.value - hundredth),
+                        at(crossing.value + hundredth),
+                    );
+                    assert!(
+                        (below > 0.0) != (above > 0.0) && more.abs() < 0.25 * cents,
+                        "{told}: {below} {above}"
+                    );
+                    assert!(
+                        answer.lever != Lever::ElectricityRate
+                            && answer.lever != Lever::FuelRate
+                            && !lever.is_money(),
+                        "{told}"
+                    );
                 }
             }
         }
@@ -117,8 +164,13 @@ fn hourly_prices_break_even_too() {
     let text = std::fs::read_to_string(root.join("briefs/terrace.toml")).unwrap();
     let text = text
         .replace("flat_electricity", "hourly_electricity")
+        .replace("flat_gas", "gas_by_volume")
+        .replace("GBP", "EUR")
         .replace("\"../", &format!("\"{}/", root.display()))
-        .replace("\"machines/", &format!("\"{}/briefs/machines/", root.display()));
+        .replace(
+            "\"machines/",
+            &format!("\"{}/briefs/machines/", root.display()),
+        );
     let folder = tempfile::tempdir().unwrap();
     let path = folder.path().join("brief.toml");
     std::fs::write(&path, text).unwrap();
@@ -126,12 +178,19 @@ fn hourly_prices_break_even_too() {
     let outcomes = case.run().unwrap();
     let pair = Pair::new(&case, &outcomes, AIR).unwrap();
     let half = pair.at(&[(Lever::ElectricityRate, 0.5)]).unwrap();
-    let (whole, half) = (outcomes[AIR].costs.electricity_energy, half.outcomes[1].costs.electricity_energy);
+    let (whole, half) = (
+        outcomes[AIR].costs.electricity_energy,
+        half.outcomes[1].costs.electricity_energy,
+    );
     // Twelve monthly lines or one yearly, each rounded to a cent.
     assert!((half - whole / 2.0).abs() < 0.13, "{half} {whole}");
     for answer in break_even(&pair, Lever::ElectricityRate, &[Measure::YearlyCost]).unwrap() {
         for crossing in &answer.crossings {
-            let more = pair.at(&[(Lever::ElectricityRate, crossing.value)]).unwrap().more(Measure::YearlyCost).unwrap();
+            let more = pair
+                .at(&[(Lever::ElectricityRate, crossing.value)])
+                .unwrap()
+                .more(Measure::YearlyCost)
+                .unwrap();
             assert!(more.abs() < 0.011, "{more}");
         }
         assert!(!answer.crossings.is_empty());
@@ -188,13 +247,25 @@ fn the_break_even_spf_agrees_with_the_bills() {
 #[test]
 fn emitters_need_the_output_of_en_442() {
     let sizes = emitter_sizes(&pair(AIR)).unwrap();
-    let times = |flow_c: f64| sizes.iter().find(|size| size.flow_c == flow_c).unwrap().times_today;
+    let times = |flow_c: f64| {
+        sizes
+            .iter()
+            .find(|size| size.flow_c == flow_c)
+            .unwrap()
+            .times_today
+    };
     assert!((times(45.0) - 1.659).abs() < 5e-4);
     assert!((times(60.0) - 0.823).abs() < 5e-4);
     assert!((times(55.0) - 1.0).abs() < 1e-12);
-    assert_eq!((sizes.len(), sizes[0].flow_c, sizes[12].flow_c), (13, 35.0, 65.0));
+    assert_eq!(
+        (sizes.len(), sizes[0].flow_c, sizes[12].flow_c),
+        (13, 35.0, 65.0)
+    );
     let spf: Vec<f64> = sizes.iter().filter_map(|size| size.year?.spf_h4).collect();
-    assert!(spf.windows(2).all(|pair| pair[0] > pair[1]), "hotter water, lower SPF: {spf:?}");
+    assert!(
+        spf.windows(2).all(|pair| pair[0] > pair[1]),
+        "hotter water, lower SPF: {spf:?}"
+    );
     // The ground machine stops short of the hottest steps, which are told without a year.
     let ground = emitter_sizes(&pair(GROUND)).unwrap();
     assert!(ground.len() == 13 && ground[12].year.is_none() && ground[0].year.is_some());
@@ -221,7 +292,11 @@ fn swings_are_sorted_and_a_grid_holds_its_own_point() {
     let pair = pair(AIR);
     let found = swings(&pair, Measure::YearlyCost).unwrap();
     assert!(found.len() >= 6);
-    assert!(found.windows(2).all(|two| two[0].length() >= two[1].length()));
+    assert!(
+        found
+            .windows(2)
+            .all(|two| two[0].length() >= two[1].length())
+    );
     let grid = two_levers(&pair, Lever::ElectricityRate, Lever::FuelRate, 17).unwrap();
     // 0.4 to 2.0 in 16 steps: the seventh value is 1.
     assert!((grid.x.1[6] - 1.0).abs() < 1e-12);
@@ -236,7 +311,11 @@ fn what_makes_a_case_impossible_is_explained() {
     for (lever, value, said) in [
         (Lever::FlowTemperature, 64.0, "the machine does not reach"),
         (Lever::HeatLoss, -0.5, "heat loss from 0.01"),
-        (Lever::FieldFactor, 1.2, "share of laboratory performance kept from 0.5 to 1"),
+        (
+            Lever::FieldFactor,
+            1.2,
+            "share of laboratory performance kept from 0.5 to 1",
+        ),
         (Lever::Grant, -1.0, "grant from 0"),
         (Lever::Indoor, f64::NAN, "indoor temperature from 5"),
     ] {
@@ -244,12 +323,21 @@ fn what_makes_a_case_impossible_is_explained() {
         assert!(told.contains(said), "{told}");
     }
     let air = self::pair(AIR);
-    let told = air.at(&[(Lever::LoopResistance, 2.0)]).unwrap_err().to_string();
-    assert!(told.contains("has no loop resistance") && told.contains("\"gas rate\""), "{told}");
+    let told = air
+        .at(&[(Lever::LoopResistance, 2.0)])
+        .unwrap_err()
+        .to_string();
+    assert!(
+        told.contains("has no loop resistance") && told.contains("\"gas rate\""),
+        "{told}"
+    );
     // A refused move leaves the case as it was.
     let mut case = pair.case().clone();
     case.apply(CHOICE, &[(Lever::HeatLoss, 1.2)]).unwrap();
-    assert!(case.apply(CHOICE, &[(Lever::HeatLoss, 1.1), (Lever::Grant, -1.0)]).is_err());
+    assert!(
+        case.apply(CHOICE, &[(Lever::HeatLoss, 1.1), (Lever::Grant, -1.0)])
+            .is_err()
+    );
     assert_eq!(Lever::HeatLoss.now(&case, CHOICE), Some(1.2));
 }
 
@@ -266,13 +354,25 @@ fn study(arguments: &[&str], threads: &str) -> std::process::Output {
 
 #[test]
 fn the_bytes_do_not_depend_on_the_number_of_threads() {
-    let arguments = ["--choice", "Air source, larger radiators", "--format", "json"];
+    let arguments = [
+        "--choice",
+        "Air source, larger radiators",
+        "--format",
+        "json",
+    ];
     let (one, three) = (study(&arguments, "1"), study(&arguments, "3"));
     assert!(one.status.success());
     assert!(one.stdout == three.stdout);
     let json: serde_json::Value = serde_json::from_slice(&one.stdout).unwrap();
     let choice = &json["choices"][0];
-    for field in ["break_even", "break_even_spf", "emitters", "sizes", "two_levers", "swings"] {
+    for field in [
+        "break_even",
+        "break_even_spf",
+        "emitters",
+        "sizes",
+        "two_levers",
+        "swings",
+    ] {
         assert!(!choice[field].is_null(), "{field}");
     }
     assert_eq!(choice["two_levers"]["saving"].as_array().unwrap().len(), 40);
@@ -293,7 +393,15 @@ fn arguments_that_are_wrong_are_told_with_what_would_be_right() {
         (&["--over", "heat los"][..], "did you mean \"heat loss\"?"),
         (&["--choice", "nothing"], "\"Air source, same radiators\""),
         (&["--over", "gas rate"], "the same lever twice"),
-        (&["--choice", "Air source, same radiators", "--over", "loop resistance"], "has no loop resistance"),
+        (
+            &[
+                "--choice",
+                "Air source, same radiators",
+                "--over",
+                "loop resistance",
+            ],
+            "has no loop resistance",
+        ),
     ] {
         let output = study(arguments, "2");
         let told = String::from_utf8(output.stderr).unwrap();

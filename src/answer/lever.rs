@@ -14,10 +14,21 @@ pub(super) fn lever_answer(found: &BreakEven, pair: &Pair) -> LeverAnswer {
     let label = &pair.choice().system.label;
     let unit = unit(found.lever, pair);
     let words = Words::of(found.measure);
-    let values: Vec<f64> = found.crossings.iter().map(|crossing| crossing.value).collect();
-    let conditions: Vec<_> = values.iter().map(|&value| condition(found.lever, found.now, value, pair)).collect();
+    let values: Vec<f64> = found
+        .crossings
+        .iter()
+        .map(|crossing| crossing.value)
+        .collect();
+    let conditions: Vec<_> = values
+        .iter()
+        .map(|&value| condition(found.lever, found.now, value, pair))
+        .collect();
     let side = |crossing: &Crossing| {
-        let side = if crossing.better_above { "above" } else { "below" };
+        let side = if crossing.better_above {
+            "above"
+        } else {
+            "below"
+        };
         format!("{} {side} that", words.better)
     };
     let sides: Vec<String> = found.crossings.iter().map(side).collect();
@@ -25,11 +36,28 @@ pub(super) fn lever_answer(found: &BreakEven, pair: &Pair) -> LeverAnswer {
     let stays = if better { words.better } else { words.worse };
     let range = &found.range;
     let sentence = if values.is_empty() {
-        let between = format!("{} from {} to {} {unit}", range.label, short(range.low), short(range.high));
-        format!("No {} makes \"{label}\" {}: it stays {stays}.", between.trim_end(), words.equals)
+        let between = format!(
+            "{} from {} to {} {unit}",
+            range.label,
+            short(range.low),
+            short(range.high)
+        );
+        format!(
+            "No {} makes \"{label}\" {}: it stays {stays}.",
+            between.trim_end(),
+            words.equals
+        )
     } else {
-        let each: Vec<_> = conditions.iter().zip(&sides).map(|(value, side)| format!("{value}; it is {side}")).collect();
-        format!("\"{label}\" {} with {}.", words.even, each.join(", and again with "))
+        let each: Vec<_> = conditions
+            .iter()
+            .zip(&sides)
+            .map(|(value, side)| format!("{value}; it is {side}"))
+            .collect();
+        format!(
+            "\"{label}\" {} with {}.",
+            words.even,
+            each.join(", and again with ")
+        )
     };
     LeverAnswer {
         lever: found.lever.name().to_owned(),
@@ -98,7 +126,13 @@ pub(super) fn price_unit(currency: Currency) -> (f64, String) {
 
 /// A number without decimals that say nothing.
 pub fn short(value: f64) -> String {
-    let digits = if value.abs() >= 100.0 { 0 } else if value.abs() >= 10.0 { 1 } else { 2 };
+    let digits = if value.abs() >= 100.0 {
+        0
+    } else if value.abs() >= 10.0 {
+        1
+    } else {
+        2
+    };
     let text = format!("{value:.digits$}");
     if text.contains('.') {
         text.trim_end_matches('0').trim_end_matches('.').to_owned()
@@ -115,19 +149,41 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
         let percent = (value - 1.0) * 100.0;
         let side = if percent >= 0.0 { more } else { less };
         let percent = percent.abs();
-        let percent = if percent < 9.5 { format!("{percent:.1}") } else { format!("{percent:.0}") };
+        let percent = if percent < 9.5 {
+            format!("{percent:.1}")
+        } else {
+            format!("{percent:.0}")
+        };
         let absolute = absolute.map_or_else(String::new, |absolute| format!(" ({absolute})"));
-        format!("{what} {} % {side}{absolute}", percent.trim_end_matches(".0"))
+        format!(
+            "{what} {} % {side}{absolute}",
+            percent.trim_end_matches(".0")
+        )
     };
     match lever {
-        Lever::ElectricityRate => times("electricity", "dearer", "cheaper", rates(&choice.electricity, value)),
+        Lever::ElectricityRate => times(
+            "electricity",
+            "dearer",
+            "cheaper",
+            rates(&choice.electricity, value),
+        ),
         Lever::FuelRate => {
             let account = pair.today().fuel.as_ref().or(choice.fuel.as_ref());
-            times("gas", "dearer", "cheaper", account.and_then(|account| rates(account, value)))
+            times(
+                "gas",
+                "dearer",
+                "cheaper",
+                account.and_then(|account| rates(account, value)),
+            )
         }
         Lever::HeatLoss => {
             let w_per_k = choice.system.home.fabric.heat_loss_w_per_k() * value;
-            times("a heat loss", "larger", "smaller", Some(format!("{w_per_k:.0} W/K")))
+            times(
+                "a heat loss",
+                "larger",
+                "smaller",
+                Some(format!("{w_per_k:.0} W/K")),
+            )
         }
         Lever::FlowTemperature => format!("a design flow of {value:.0} °C (now {now:.0} °C)"),
         Lever::Indoor => format!("rooms at {value:.1} °C (now {now:.1} °C)"),
@@ -141,7 +197,9 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
         Lever::LoopResistance => {
             let absolute = match &choice.system.heating {
                 Heating::HeatPump(system) => match &system.source {
-                    Source::Ground(ground) => Some(format!("{:.2} K/kW", ground.resistance_k_per_kw * value)),
+                    Source::Ground(ground) => {
+                        Some(format!("{:.2} K/kW", ground.resistance_k_per_kw * value))
+                    }
                     _ => None,
                 },
                 _ => None,
@@ -168,10 +226,15 @@ fn rates(account: &Account, factor: f64) -> Option<String> {
         .map(|band| {
             let amount = band.rate.amount.checked_mul(factor)?.round_dp(4);
             let words = tariff.currency.price_words(amount, band.rate.unit.symbol);
-            Some(if one { words } else { format!("{} {words}", band.label) })
+            Some(if one {
+                words
+            } else {
+                format!("{} {words}", band.label)
+            })
         })
         .collect();
-    said.filter(|said| !said.is_empty() && said.len() <= SAID).map(|said| said.join(", "))
+    said.filter(|said| !said.is_empty() && said.len() <= SAID)
+        .map(|said| said.join(", "))
 }
 
 #[cfg(test)]

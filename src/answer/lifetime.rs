@@ -91,8 +91,11 @@ pub struct LifetimeYear {
 
 /// The lifetime of a case; nothing when no choice has its capital.
 pub(super) fn lifetime(case: &Case, outcomes: &[Outcome]) -> Option<LifetimeAnswer> {
-    let flows: Vec<Option<CashFlow>> =
-        outcomes.iter().enumerate().map(|(i, outcome)| cash_flow(case, i, outcome)).collect();
+    let flows: Vec<Option<CashFlow>> = outcomes
+        .iter()
+        .enumerate()
+        .map(|(i, outcome)| cash_flow(case, i, outcome))
+        .collect();
     let today = flows.first()?.as_ref()?;
     let systems: Vec<SystemLifetime> = case
         .contenders
@@ -101,7 +104,12 @@ pub(super) fn lifetime(case: &Case, outcomes: &[Outcome]) -> Option<LifetimeAnsw
         .filter_map(|(contender, flow)| {
             let flow = flow.as_ref()?;
             let outlay = contender.outlay.clone().unwrap_or_default();
-            Some(system(&contender.system.label, &outlay, flow, (!contender.today).then_some(today)))
+            Some(system(
+                &contender.system.label,
+                &outlay,
+                flow,
+                (!contender.today).then_some(today),
+            ))
         })
         .collect();
     (systems.len() > 1).then(|| LifetimeAnswer {
@@ -112,7 +120,12 @@ pub(super) fn lifetime(case: &Case, outcomes: &[Outcome]) -> Option<LifetimeAnsw
     })
 }
 
-fn system(label: &str, outlay: &Outlay, flow: &CashFlow, today: Option<&CashFlow>) -> SystemLifetime {
+fn system(
+    label: &str,
+    outlay: &Outlay,
+    flow: &CashFlow,
+    today: Option<&CashFlow>,
+) -> SystemLifetime {
     let paid_back = today.map(|today| payback(flow, today));
     let so_far = flow.spent_so_far();
     SystemLifetime {

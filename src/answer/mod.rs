@@ -3,16 +3,17 @@
 mod compose;
 pub mod cycle;
 mod estimate;
+pub mod explain;
 mod lever;
 pub mod lifetime;
-pub mod study;
-pub mod explain;
 pub mod machine;
+pub mod odds;
 pub mod rating;
+pub mod study;
 pub mod tariff;
 
 pub use compose::{Told, compose};
-pub use lever::short;
 pub use estimate::{
     Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };
+pub use lever::short;

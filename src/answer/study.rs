@@ -8,8 +8,8 @@ use super::lever::{condition, lever_answer, price_unit, unit};
 use super::lifetime::{LifetimeAnswer, lifetime};
 use crate::problem::{Finding, Problems};
 use crate::study::{
-    Applies, Case, Lever, MachineSize, MachineSizes, Measure, Outcome, Pair, break_even, break_even_spf,
-    emitter_sizes, machine_sizes, swings, two_levers,
+    Applies, Case, Lever, MachineSize, MachineSizes, Measure, Outcome, Pair, break_even,
+    break_even_spf, emitter_sizes, machine_sizes, swings, two_levers,
 };
 
 /// What would change the answer, choice by choice.
@@ -204,7 +204,12 @@ pub struct Wish {
 ///
 /// # Errors
 /// A lever that a choice does not have, or a year that cannot be run or billed with a lever moved.
-pub fn studies(case: &Case, outcomes: &[Outcome], told: &Told, wish: &Wish) -> Result<StudyAnswer, Problems> {
+pub fn studies(
+    case: &Case,
+    outcomes: &[Outcome],
+    told: &Told,
+    wish: &Wish,
+) -> Result<StudyAnswer, Problems> {
     let choices = wish
         .choices
         .iter()
@@ -350,7 +355,10 @@ fn sizes_in_words(pair: &Pair, sizes: &MachineSizes) -> String {
             larger.starts
         );
     }
-    let cycles = sizes.sizes.iter().find(|size| size.least_over_mild_load > 1.0);
+    let cycles = sizes
+        .sizes
+        .iter()
+        .find(|size| size.least_over_mild_load > 1.0);
     words += &cycles.map_or_else(
         || format!("; none is too large for a mild day of {:.0} °C", sizes.mild.0),
         |size| {

@@ -87,7 +87,11 @@ pub(super) fn terms(
 ) -> Option<Terms> {
     // Without any capital in the brief nothing is counted over the years, so nothing was assumed for it.
     let mut unused = Notes::default();
-    let notes = if told || table.is_some() { notes } else { &mut unused };
+    let notes = if told || table.is_some() {
+        notes
+    } else {
+        &mut unused
+    };
     let years = whole_years(
         table.and_then(|table| table.years.as_ref()),
         &bounds::COMPARED_YEARS,
@@ -105,9 +109,19 @@ pub(super) fn terms(
     let mut course = |change: fn(&LifetimeTable) -> &Option<Leaf<Share>>,
                       given: fn(&LifetimeTable) -> &Option<Leaf<Vec<Share>>>,
                       default: &Default| {
-        path(table.map(|table| (change(table), given(table))), years, default, check, notes)
+        path(
+            table.map(|table| (change(table), given(table))),
+            years,
+            default,
+            check,
+            notes,
+        )
     };
-    let electricity = course(|t| &t.electricity_change, |t| &t.electricity_path, &defaults::ELECTRICITY_CHANGE);
+    let electricity = course(
+        |t| &t.electricity_change,
+        |t| &t.electricity_path,
+        &defaults::ELECTRICITY_CHANGE,
+    );
     let fuel = course(|t| &t.gas_change, |t| &t.gas_path, &defaults::GAS_CHANGE);
     let electricity_carbon = course(
         |t| &t.electricity_carbon_change,
@@ -148,8 +162,15 @@ fn path(
         let change = notes.quantity(check, change, &bounds::YEARLY_CHANGE, default)?;
         return Some(Path::Change(change.fraction()));
     };
-    let multiples: Vec<f64> = check.value(given)?.iter().map(|share| share.fraction()).collect();
-    if let Some(wrong) = multiples.iter().find(|multiple| !bounds::PATH_MULTIPLE.holds(**multiple)) {
+    let multiples: Vec<f64> = check
+        .value(given)?
+        .iter()
+        .map(|share| share.fraction())
+        .collect();
+    if let Some(wrong) = multiples
+        .iter()
+        .find(|multiple| !bounds::PATH_MULTIPLE.holds(**multiple))
+    {
         check.refuse(
             &leaf.span(),
             format!("{} %", wrong * 100.0),
@@ -162,7 +183,10 @@ fn path(
     if multiples.len() < years {
         check.refuse(
             &leaf.span(),
-            format!("a path of {} years for a life of {years} years", multiples.len()),
+            format!(
+                "a path of {} years for a life of {years} years",
+                multiples.len()
+            ),
             format!("a value for each of the {years} years"),
             "give the missing years, or compare over fewer years",
         );
@@ -203,19 +227,36 @@ pub(super) fn outlay(
         );
     }
     let due_in_years = match due_in {
-        Some(_) => whole_years(due_in, &bounds::DUE_IN_YEARS, &defaults::DUE_IN, check, notes),
+        Some(_) => whole_years(
+            due_in,
+            &bounds::DUE_IN_YEARS,
+            &defaults::DUE_IN,
+            check,
+            notes,
+        ),
         None if today => {
             notes.used(&defaults::DUE_IN);
-            parse::<Years>(defaults::DUE_IN.value).ok().map(|years| years.years() as usize)
+            parse::<Years>(defaults::DUE_IN.value)
+                .ok()
+                .map(|years| years.years() as usize)
         }
         None => Some(0),
     };
     let mut parts = Vec::new();
     let mut sound = due_in_years.is_some();
-    let mut buy = |label: &str, price: &Option<Leaf<Money>>, life: Option<&Leaf<Years>>, usual: &Default, check: &mut Check| {
+    let mut buy = |label: &str,
+                   price: &Option<Leaf<Money>>,
+                   life: Option<&Leaf<Years>>,
+                   usual: &Default,
+                   check: &mut Check| {
         if price.is_none() {
             if let Some(leaf) = life {
-                check.refuse(&leaf.span(), format!("a life of the {label} without its price"), "", "give the price too");
+                check.refuse(
+                    &leaf.span(),
+                    format!("a life of the {label} without its price"),
+                    "",
+                    "give the price too",
+                );
                 sound = false;
             }
             return;
@@ -250,15 +291,51 @@ pub(super) fn outlay(
             );
             return None;
         }
-        buy("machine", &table.capital, life(|o| &o.machine_life), machine_life, check);
+        buy(
+            "machine",
+            &table.capital,
+            life(|o| &o.machine_life),
+            machine_life,
+            check,
+        );
     } else if let Some(own) = own {
-        buy("machine", &own.machine, own.machine_life.as_ref(), machine_life, check);
+        buy(
+            "machine",
+            &own.machine,
+            own.machine_life.as_ref(),
+            machine_life,
+            check,
+        );
     }
     if let Some(own) = own {
-        buy("loop", &own.ground_loop, own.loop_life.as_ref(), &defaults::LOOP_LIFE, check);
-        buy("emitters", &own.emitters, own.emitters_life.as_ref(), &defaults::EMITTERS_LIFE, check);
-        buy("store", &own.store, own.store_life.as_ref(), &defaults::STORE_LIFE, check);
-        buy("installation", &own.installation, None, &defaults::INSTALLATION_LIFE, check);
+        buy(
+            "loop",
+            &own.ground_loop,
+            own.loop_life.as_ref(),
+            &defaults::LOOP_LIFE,
+            check,
+        );
+        buy(
+            "emitters",
+            &own.emitters,
+            own.emitters_life.as_ref(),
+            &defaults::EMITTERS_LIFE,
+            check,
+        );
+        buy(
+            "store",
+            &own.store,
+            own.store_life.as_ref(),
+            &defaults::STORE_LIFE,
+            check,
+        );
+        buy(
+            "installation",
+            &own.installation,
+            None,
+            &defaults::INSTALLATION_LIFE,
+            check,
+        );
     }
     let mut paid = |price: Option<&Option<Leaf<Money>>>| match price {
         Some(price) if price.is_some() => money(price, currency, check),
@@ -275,7 +352,11 @@ pub(super) fn outlay(
     if let (true, Some(leaf)) = (outlay.grant > outlay.capital() && sound, grant_leaf) {
         check.refuse(
             &leaf.span(),
-            format!("a grant of {} for a capital of {}", outlay.grant, outlay.capital()),
+            format!(
+                "a grant of {} for a capital of {}",
+                outlay.grant,
+                outlay.capital()
+            ),
             "a grant no larger than what is paid at the beginning",
             "give the capital before the grant, or a smaller grant",
         );
@@ -299,7 +380,12 @@ fn money(leaf: &Option<Leaf<Money>>, currency: Option<Currency>, check: &mut Che
         return None;
     }
     if money.amount.is_sign_negative() {
-        check.refuse(&span, format!("{money}"), "an amount from 0", "what comes in is a grant");
+        check.refuse(
+            &span,
+            format!("{money}"),
+            "an amount from 0",
+            "what comes in is a grant",
+        );
         return None;
     }
     money.amount.to_f64()
@@ -316,7 +402,12 @@ fn whole_years(
     let leaf = leaf.cloned();
     let years = notes.quantity(check, &leaf, bound, default)?.years();
     if let (Some(leaf), true) = (&leaf, years.fract() != 0.0) {
-        check.refuse(&leaf.span(), format!("{years} years"), "a whole number of years", "round it");
+        check.refuse(
+            &leaf.span(),
+            format!("{years} years"),
+            "a whole number of years",
+            "round it",
+        );
         return None;
     }
     // Bounded above by the limits table.

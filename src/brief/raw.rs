@@ -3,10 +3,10 @@
 use schemars::JsonSchema;
 use serde::Deserialize;
 
-use super::lifetime::{LifetimeTable, OutlayTable};
 use super::ground::{
     BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
 };
+use super::lifetime::{LifetimeTable, OutlayTable};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind};

@@ -122,7 +122,10 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             }
         }
     }
-    let told = raw.choice.iter().any(|choice| choice.capital.is_some() || choice.outlay.is_some());
+    let told = raw
+        .choice
+        .iter()
+        .any(|choice| choice.capital.is_some() || choice.outlay.is_some());
     let terms = terms(raw.lifetime.as_ref(), told, check, &mut notes);
     let Energy {
         currency,

@@ -60,21 +60,43 @@ pub fn emitter_study(data: &EmitterStudy, marks: &Marks) -> Result<Picture, Char
         });
     }
     for step in &data.steps {
-        finite(PICTURE, [("flow temperature", step.flow_c), ("times today's output", step.times_today)])?;
+        finite(
+            PICTURE,
+            [
+                ("flow temperature", step.flow_c),
+                ("times today's output", step.times_today),
+            ],
+        )?;
         finite(PICTURE, step.saving.map(|v| ("saving", v)))?;
         finite(PICTURE, step.spf_h4.map(|v| ("SPF", v)))?;
     }
-    finite(PICTURE, data.now_c.iter().chain(&data.crossings_c).map(|v| ("flow temperature", *v)))?;
+    finite(
+        PICTURE,
+        data.now_c
+            .iter()
+            .chain(&data.crossings_c)
+            .map(|v| ("flow temperature", *v)),
+    )?;
     let title = "Cooler water, larger emitters";
-    let subtitle = format!("{} Against the flow temperature on the design day.", sentence(&data.choice, 330.0));
+    let subtitle = format!(
+        "{} Against the flow temperature on the design day.",
+        sentence(&data.choice, 330.0)
+    );
     let mut scene = Scene::new(f64::MAX);
     let top = scene.heading(title, &subtitle);
     scene.height = top + PANELS.iter().sum::<f64>() + 6.0;
 
     let line = |of: fn(&EmitterStep) -> Option<f64>| -> Vec<(f64, f64)> {
-        data.steps.iter().filter_map(|step| Some((step.flow_c, of(step)?))).collect()
+        data.steps
+            .iter()
+            .filter_map(|step| Some((step.flow_c, of(step)?)))
+            .collect()
     };
-    let lines = [line(|s| s.saving), line(|s| s.spf_h4), line(|s| Some(s.times_today))];
+    let lines = [
+        line(|s| s.saving),
+        line(|s| s.spf_h4),
+        line(|s| Some(s.times_today)),
+    ];
     let titles = [
         format!("Saving in a year, {}", money_unit(&data.currency)),
         "SPF with all auxiliaries (no unit)".to_owned(),
@@ -83,13 +105,21 @@ pub fn emitter_study(data: &EmitterStudy, marks: &Marks) -> Result<Picture, Char
     let mut y = top;
     let mut frames = Vec::new();
     for (i, ((line, title), height)) in lines.iter().zip(&titles).zip(PANELS).enumerate() {
-        let ends = line.iter().fold((f64::INFINITY, f64::NEG_INFINITY), |(l, h), p| (l.min(p.1), h.max(p.1)));
+        let ends = line
+            .iter()
+            .fold((f64::INFINITY, f64::NEG_INFINITY), |(l, h), p| {
+                (l.min(p.1), h.max(p.1))
+            });
         let (low, high) = match i {
             0 => (ends.0.min(0.0), ends.1.max(0.0)),
             2 => (0.0, ends.1.max(1.0)),
             _ => ends,
         };
-        let below = if i == 2 { 0.0 } else { super::frame::BELOW - 12.0 };
+        let below = if i == 2 {
+            0.0
+        } else {
+            super::frame::BELOW - 12.0
+        };
         let mut frame = Frame::inside(
             Rect {
                 left: MARGIN,
@@ -97,7 +127,13 @@ pub fn emitter_study(data: &EmitterStudy, marks: &Marks) -> Result<Picture, Char
                 right: WIDTH - MARGIN,
                 bottom: y + height + below,
             },
-            Axis::tight("Design flow temperature, °C", first.flow_c, last.flow_c, 7, marks),
+            Axis::tight(
+                "Design flow temperature, °C",
+                first.flow_c,
+                last.flow_c,
+                7,
+                marks,
+            ),
             Axis::linear(title, low, high, 4, marks),
         );
         // All panels share the left edge.
@@ -115,7 +151,10 @@ pub fn emitter_study(data: &EmitterStudy, marks: &Marks) -> Result<Picture, Char
         if i == 0 {
             frame.level(&mut scene, 0.0, INK, Dash::Solid);
         }
-        if let Some(now) = data.now_c.filter(|now| *now >= first.flow_c && *now <= last.flow_c) {
+        if let Some(now) = data
+            .now_c
+            .filter(|now| *now >= first.flow_c && *now <= last.flow_c)
+        {
             frame.upright(&mut scene, now, INK, Dash::Dotted);
         }
         frame.line(&mut scene, line, NAVY, 2.8, Dash::Solid);
@@ -154,22 +193,38 @@ fn label(scene: &mut Scene, frames: &[Frame], data: &EmitterStudy, marks: &Marks
     }
     // The first point stands at the edge, where a label would cover the line.
     for step in data.steps.iter().skip(2).step_by(2) {
-        times.note(scene, &format!("×\u{a0}{}", marks.number(step.times_today, 2)), step.flow_c, step.times_today);
+        times.note(
+            scene,
+            &format!("×\u{a0}{}", marks.number(step.times_today, 2)),
+            step.flow_c,
+            step.times_today,
+        );
         if let Some(value) = step.spf_h4 {
             spf.note(scene, &marks.number(value, 2), step.flow_c, value);
         }
     }
     if let Some(step) = data.steps.iter().find(|step| step.saving.is_none()) {
         let (x, y) = (saving.at_x(step.flow_c), saving.area.top + 30.0);
-        let text = font::fit("the machine does not reach this", SMALL, Weight::Regular, 200.0);
+        let text = font::fit(
+            "the machine does not reach this",
+            SMALL,
+            Weight::Regular,
+            200.0,
+        );
         let places = [((x + 4.0, y), Anchor::Start), ((x - 4.0, y), Anchor::End)];
         scene.place(&saving.area, &text, &places, Type::small());
     }
 }
 
 fn alt(data: &EmitterStudy, marks: &Marks) -> String {
-    let mut out = format!("{}: saving, SPF and emitter size against design flow temperature.", named(&data.choice));
-    for step in [data.steps.first(), data.steps.last()].into_iter().flatten() {
+    let mut out = format!(
+        "{}: saving, SPF and emitter size against design flow temperature.",
+        named(&data.choice)
+    );
+    for step in [data.steps.first(), data.steps.last()]
+        .into_iter()
+        .flatten()
+    {
         out += &format!(
             " At {} °C the emitters need {} times today's output",
             marks.number(step.flow_c, 0),
@@ -214,7 +269,10 @@ mod tests {
     fn now_and_break_even_are_written() {
         let picture = emitter_study(&data(), &Marks::default()).unwrap();
         for text in ["now 55\u{a0}°C", "breaks even at 57.2\u{a0}°C"] {
-            assert!(picture.labels().iter().any(|label| label.text == text), "{text}");
+            assert!(
+                picture.labels().iter().any(|label| label.text == text),
+                "{text}"
+            );
         }
         assert!(picture.alt.contains("It breaks even at 57.2 °C"));
     }
@@ -229,6 +287,9 @@ mod tests {
         }
         let mut one = data();
         one.steps.truncate(1);
-        assert!(matches!(emitter_study(&one, &Marks::default()), Err(ChartError::Empty { .. })));
+        assert!(matches!(
+            emitter_study(&one, &Marks::default()),
+            Err(ChartError::Empty { .. })
+        ));
     }
 }

@@ -10,9 +10,10 @@ mod explain;
 mod failure;
 mod files;
 mod machine;
+mod odds;
 mod output;
-mod study;
 mod rating;
+mod study;
 mod tariff;
 
 use std::process::ExitCode;
@@ -40,6 +41,7 @@ struct Arguments {
 enum Command {
     Estimate(estimate::Args),
     Study(study::Args),
+    Odds(odds::Args),
     Explain(explain::Args),
     Cycle(cycle::Args),
     Machine(machine::Args),
@@ -60,6 +62,7 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
         Command::Study(args) => study::run(args),
+        Command::Odds(args) => odds::run(args),
         Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
         Command::Machine(args) => machine::run(args),

@@ -7,8 +7,8 @@ use crate::answer::lifetime::LifetimeAnswer;
 use crate::answer::study::{AxisAnswer, ChoiceStudy, StudyAnswer, TwoLeversAnswer, Wish, studies};
 use crate::brief::Brief;
 use crate::chart::{
-    ChartError, Contours, CumulativeSpend, EmitterStep, EmitterStudy, Marks, Picture, Swing, Swings, SystemSpend,
-    contours, cumulative_spend, emitter_study, swings,
+    ChartError, Contours, CumulativeSpend, EmitterStep, EmitterStudy, Marks, Picture, Swing,
+    Swings, SystemSpend, contours, cumulative_spend, emitter_study, swings,
 };
 use crate::problem::{Place, Problem, Problems};
 use crate::report::study_text;
@@ -68,16 +68,24 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         Some(path) => problems.take(Brief::read(path)),
         None => problems.take(Brief::demonstration()),
     };
-    let choices = brief.as_ref().and_then(|brief| problems.take(choices(&brief.case, args.choice.as_deref())));
+    let choices = brief
+        .as_ref()
+        .and_then(|brief| problems.take(choices(&brief.case, args.choice.as_deref())));
     let given = over.zip(against).zip(brief.zip(choices));
     problems.or(())?;
-    let Some((together, (brief, choices))) = given else { return Ok(()) };
+    let Some((together, (brief, choices))) = given else {
+        return Ok(());
+    };
     let prices = [Lever::ElectricityRate, Lever::FuelRate];
     let both_prices = prices.contains(&together.0) && prices.contains(&together.1);
     let wish = Wish {
         choices,
         together,
-        steps: if both_prices { PRICE_STEPS } else { OTHER_STEPS },
+        steps: if both_prices {
+            PRICE_STEPS
+        } else {
+            OTHER_STEPS
+        },
     };
     let outcomes = brief.case.run()?;
     let answer = studies(&brief.case, &outcomes, &brief.told, &wish)?;
@@ -95,9 +103,9 @@ fn lever(argument: &str, name: &str) -> Result<Lever, Problems> {
     Lever::named(name).ok_or_else(|| {
         let names: Vec<_> = Lever::ALL.iter().map(|lever| lever.name()).collect();
         let wanted = name.to_lowercase();
-        let nearest = names
-            .iter()
-            .max_by(|a, b| strsim::jaro_winkler(a, &wanted).total_cmp(&strsim::jaro_winkler(b, &wanted)));
+        let nearest = names.iter().max_by(|a, b| {
+            strsim::jaro_winkler(a, &wanted).total_cmp(&strsim::jaro_winkler(b, &wanted))
+        });
         Problem::new(
             Place::field(argument),
             format!("\"{name}\" is no lever"),
@@ -112,10 +120,16 @@ fn lever(argument: &str, name: &str) -> Result<Lever, Problems> {
 fn choices(case: &Case, label: Option<&str>) -> Result<Vec<usize>, Problems> {
     let all: Vec<usize> = (1..case.contenders.len()).collect();
     let Some(label) = label else { return Ok(all) };
-    let found: Vec<usize> =
-        all.iter().copied().filter(|&i| case.contenders[i].system.label == label).collect();
+    let found: Vec<usize> = all
+        .iter()
+        .copied()
+        .filter(|&i| case.contenders[i].system.label == label)
+        .collect();
     if found.is_empty() {
-        let labels: Vec<_> = all.iter().map(|&i| format!("\"{}\"", case.contenders[i].system.label)).collect();
+        let labels: Vec<_> = all
+            .iter()
+            .map(|&i| format!("\"{}\"", case.contenders[i].system.label))
+            .collect();
         return Err(Problem::new(
             Place::field("--choice"),
             format!("no choice is called \"{label}\""),
@@ -151,11 +165,17 @@ fn files(answer: &StudyAnswer, folder: &Path) -> Result<Vec<NewFile>, Failure> {
         let data = two_levers(choice, &answer.currency);
         add(format!("two-levers-{number}"), contours(&data, &marks))?;
         if !choice.swings.is_empty() {
-            add(format!("swings-{number}"), swings(&moved(choice, &answer.currency), &marks))?;
+            add(
+                format!("swings-{number}"),
+                swings(&moved(choice, &answer.currency), &marks),
+            )?;
         }
     }
     if let Some(lifetime) = &answer.lifetime {
-        add("spend".to_owned(), cumulative_spend(&spend(lifetime, &answer.currency), &marks))?;
+        add(
+            "spend".to_owned(),
+            cumulative_spend(&spend(lifetime, &answer.currency), &marks),
+        )?;
     }
     Ok(files)
 }
@@ -185,12 +205,24 @@ fn emitters(choice: &ChoiceStudy, currency: &str) -> Option<EmitterStudy> {
 fn two_levers(choice: &ChoiceStudy, currency: &str) -> Contours {
     let TwoLeversAnswer { x, y, saving } = &choice.two_levers;
     // Two prices are drawn as prices, so that lines of constant ratio mean something.
-    let prices = x.price_now.zip(y.price_now).filter(|(x, y)| *x > 0.0 && *y > 0.0);
+    let prices = x
+        .price_now
+        .zip(y.price_now)
+        .filter(|(x, y)| *x > 0.0 && *y > 0.0);
     let scale = |axis: &AxisAnswer, price: Option<f64>| {
         let factor = price.unwrap_or(1.0);
         let values: Vec<f64> = axis.values.iter().map(|value| value * factor).collect();
-        let unit = axis.price_unit.as_ref().filter(|_| price.is_some()).unwrap_or(&axis.unit).clone();
-        (values, axis.now * factor, (sentence_case(&axis.lever), unit))
+        let unit = axis
+            .price_unit
+            .as_ref()
+            .filter(|_| price.is_some())
+            .unwrap_or(&axis.unit)
+            .clone();
+        (
+            values,
+            axis.now * factor,
+            (sentence_case(&axis.lever), unit),
+        )
     };
     let (x_values, x_now, x_name) = scale(x, prices.map(|prices| prices.0));
     let (y_values, y_now, y_name) = scale(y, prices.map(|prices| prices.1));
@@ -204,7 +236,9 @@ fn two_levers(choice: &ChoiceStudy, currency: &str) -> Contours {
         y: y_values,
         values: saving.clone(),
         now: Some((x_now, y_now)),
-        ratios: prices.filter(|_| electricity_along_x).map_or_else(Vec::new, |_| vec![2.0, 3.0, 4.0, 5.0]),
+        ratios: prices
+            .filter(|_| electricity_along_x)
+            .map_or_else(Vec::new, |_| vec![2.0, 3.0, 4.0, 5.0]),
     }
 }
 
@@ -239,14 +273,21 @@ fn end_text(value: f64, unit: &str) -> String {
 fn spend(lifetime: &LifetimeAnswer, currency: &str) -> CumulativeSpend {
     CumulativeSpend {
         currency: currency.to_owned(),
-        terms: format!("real, discounted at {:.1} % a year", lifetime.discount_rate * 100.0),
+        terms: format!(
+            "real, discounted at {:.1} % a year",
+            lifetime.discount_rate * 100.0
+        ),
         systems: lifetime
             .systems
             .iter()
             .map(|system| SystemSpend {
                 label: system.label.clone(),
                 today: system.today,
-                spent: system.by_year.iter().map(|year| year.spent_so_far_discounted).collect(),
+                spent: system
+                    .by_year
+                    .iter()
+                    .map(|year| year.spent_so_far_discounted)
+                    .collect(),
             })
             .collect(),
     }
@@ -254,5 +295,7 @@ fn spend(lifetime: &LifetimeAnswer, currency: &str) -> CumulativeSpend {
 
 fn sentence_case(text: &str) -> String {
     let mut letters = text.chars();
-    letters.next().map_or_else(String::new, |first| first.to_uppercase().chain(letters).collect())
+    letters.next().map_or_else(String::new, |first| {
+        first.to_uppercase().chain(letters).collect()
+    })
 }

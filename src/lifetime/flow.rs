@@ -116,7 +116,11 @@ impl CashFlow {
     /// Present cost over the present worth of the heat: the levelised cost of a kilowatt-hour of heat.
     /// Nothing when there is no heat.
     pub fn cost_per_kwh_heat(&self) -> Option<f64> {
-        let heat: f64 = self.years.iter().map(|flow| flow.heat_kwh * flow.discount).sum();
+        let heat: f64 = self
+            .years
+            .iter()
+            .map(|flow| flow.heat_kwh * flow.discount)
+            .sum();
         (heat > 0.0).then(|| self.present_cost() / heat)
     }
 
@@ -200,15 +204,21 @@ mod tests {
         let annuity = 1000.0 * (1.0 - 1.035_f64.powi(-20)) / 0.035;
         assert!((flow.present_cost() - annuity).abs() < 1e-9 * annuity);
         // An even bill over even heat costs the same a kilowatt-hour whatever the rate.
-        assert!(flow.cost_per_kwh_heat().is_some_and(|cost| (cost - 0.1).abs() < 1e-12));
+        assert!(
+            flow.cost_per_kwh_heat()
+                .is_some_and(|cost| (cost - 0.1).abs() < 1e-12)
+        );
     }
 
     #[test]
     fn without_discount_payback_is_capital_over_saving() {
         let terms = terms(20, 0.0);
         let today = CashFlow::of(&terms, &Outlay::default(), &bill(1400.0));
-        let choice = |capital, bill_of_it| CashFlow::of(&terms, &outlay(capital, 20), &bill(bill_of_it));
-        assert!(matches!(payback(&choice(5000.0, 900.0), &today), Payback::After(years) if (years - 10.0).abs() < 1e-9));
+        let choice =
+            |capital, bill_of_it| CashFlow::of(&terms, &outlay(capital, 20), &bill(bill_of_it));
+        assert!(
+            matches!(payback(&choice(5000.0, 900.0), &today), Payback::After(years) if (years - 10.0).abs() < 1e-9)
+        );
         assert_eq!(payback(&choice(5000.0, 1200.0), &today), Payback::Never);
         assert_eq!(payback(&choice(0.0, 1300.0), &today), Payback::AtOnce);
     }

@@ -16,7 +16,9 @@ pub struct Part {
 impl Part {
     /// Whether it is bought at the end of a year of a comparison over `years`; nothing is bought at the very end.
     pub fn is_bought(&self, year: usize, years: usize) -> bool {
-        year < years && year >= self.due_in && (year - self.due_in).is_multiple_of(self.life_years.max(1))
+        year < years
+            && year >= self.due_in
+            && (year - self.due_in).is_multiple_of(self.life_years.max(1))
     }
 
     /// What is left of it after `years`, straight-line: the unused share of the life of the one bought last.
@@ -76,7 +78,9 @@ mod tests {
     }
 
     fn bought(part: &Part, years: usize) -> Vec<usize> {
-        (0..=years).filter(|&year| part.is_bought(year, years)).collect()
+        (0..=years)
+            .filter(|&year| part.is_bought(year, years))
+            .collect()
     }
 
     #[test]

@@ -2,12 +2,14 @@
 
 mod explain;
 mod ledger;
+mod odds;
 mod study;
 mod table;
 mod text;
 
 pub use explain::explain_text;
 pub use ledger::{ledger_csv, ledger_legend};
+pub use odds::odds_text;
 pub use study::study_text;
 pub use table::{plain_table, plain_table_within};
 pub use text::estimate_text;

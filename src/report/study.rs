@@ -2,14 +2,23 @@
 
 use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
-use crate::answer::{LeverAnswer, short};
 use crate::answer::lifetime::LifetimeAnswer;
 use crate::answer::study::{ChoiceStudy, EmitterAnswer, SizesAnswer, StudyAnswer, SwingAnswer};
+use crate::answer::{LeverAnswer, short};
 
 /// The studies as text for a terminal of 80 columns or more.
 pub fn study_text(answer: &StudyAnswer) -> String {
-    let mut blocks: Vec<String> = answer.choices.iter().map(|choice| choice_text(choice, &answer.currency)).collect();
-    blocks.extend(answer.lifetime.as_ref().map(|lifetime| lifetime_text(lifetime, &answer.currency)));
+    let mut blocks: Vec<String> = answer
+        .choices
+        .iter()
+        .map(|choice| choice_text(choice, &answer.currency))
+        .collect();
+    blocks.extend(
+        answer
+            .lifetime
+            .as_ref()
+            .map(|lifetime| lifetime_text(lifetime, &answer.currency)),
+    );
     blocks.push(wrapped(LIMITS, "", ""));
     blocks.join("\n\n")
 }
@@ -24,10 +33,18 @@ fn choice_text(choice: &ChoiceStudy, currency: &str) -> String {
         "{}: {:.0} {currency} a year, {:+.0} against today",
         choice.label, choice.cost, choice.saving
     )];
-    let answered = |measure: &'static str| choice.break_even.iter().filter(move |lever| lever.measure == measure);
+    let answered = |measure: &'static str| {
+        choice
+            .break_even
+            .iter()
+            .filter(move |lever| lever.measure == measure)
+    };
     for (measure, heading) in [
         ("yearly cost", "What would make the bills equal"),
-        ("lifetime cost", "What would make the cost over the years equal"),
+        (
+            "lifetime cost",
+            "What would make the cost over the years equal",
+        ),
         ("carbon", "What would make the carbon equal"),
     ] {
         let levers: Vec<_> = answered(measure).collect();
@@ -38,7 +55,12 @@ fn choice_text(choice: &ChoiceStudy, currency: &str) -> String {
     if let Some(spf) = &choice.break_even_spf {
         blocks.push(wrapped(&spf.sentence, "", "  "));
     }
-    blocks.extend(choice.emitters.as_ref().map(|emitters| emitters_text(emitters)));
+    blocks.extend(
+        choice
+            .emitters
+            .as_ref()
+            .map(|emitters| emitters_text(emitters)),
+    );
     blocks.extend(choice.sizes.as_ref().map(sizes_text));
     if !choice.swings.is_empty() {
         blocks.push(swings_text(&choice.swings, currency));
@@ -66,10 +88,16 @@ fn levers_text(levers: &[&LeverAnswer]) -> String {
             .iter()
             .map(|lever| {
                 let [low, high] = lever.between.map(short);
-                format!("{} from {low} to {high} {}", lever.lever, lever.unit).trim_end().to_owned()
+                format!("{} from {low} to {high} {}", lever.lever, lever.unit)
+                    .trim_end()
+                    .to_owned()
             })
             .collect();
-        lines.push(wrapped(&format!("It stays {how} with {}.", ranges.join(", ")), "  ", "    "));
+        lines.push(wrapped(
+            &format!("It stays {how} with {}.", ranges.join(", ")),
+            "  ",
+            "    ",
+        ));
     }
     lines.join("\n")
 }
@@ -84,16 +112,27 @@ fn emitters_text(emitters: &[EmitterAnswer]) -> String {
             format!("{:.1} °C", step.flow_c),
             format!("{:.2}", step.times_today_output),
             or_dash(step.cost, 0),
-            step.saving.map_or_else(|| "–".to_owned(), |saving| format!("{saving:+.0}")),
+            step.saving
+                .map_or_else(|| "–".to_owned(), |saving| format!("{saving:+.0}")),
             or_dash(step.spf_h4, 2),
             or_dash(step.hours_short, 0),
         ]
     });
-    let header = ["Design flow", "Times today's emitter output", "Cost of the year", "Saving", "SPF (H4)", "Hours short"];
+    let header = [
+        "Design flow",
+        "Times today's emitter output",
+        "Cost of the year",
+        "Saving",
+        "SPF (H4)",
+        "Hours short",
+    ];
     let table = plain_table_within(WIDTH, header, rows);
     let beyond = emitters.iter().find(|step| !step.reached);
     let note = beyond.map_or_else(String::new, |step| {
-        format!("\n  – the machine does not reach {:.1} °C on the design day", step.flow_c)
+        format!(
+            "\n  – the machine does not reach {:.1} °C on the design day",
+            step.flow_c
+        )
     });
     format!("Cooler water and larger emitters\n{table}{note}")
 }
@@ -138,7 +177,10 @@ fn swings_text(swings: &[SwingAnswer], currency: &str) -> String {
         wrapped(&line, "  ", "      ")
     });
     let lines: Vec<_> = lines.collect();
-    format!("Yearly saving with one quantity at its low and its high\n{}", lines.join("\n"))
+    format!(
+        "Yearly saving with one quantity at its low and its high\n{}",
+        lines.join("\n")
+    )
 }
 
 fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
@@ -155,23 +197,56 @@ fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
         row
     };
     let systems = &lifetime.systems;
-    let all = |figure: fn(&crate::answer::lifetime::SystemLifetime) -> String| systems.iter().map(figure).collect();
+    let all = |figure: fn(&crate::answer::lifetime::SystemLifetime) -> String| {
+        systems.iter().map(figure).collect()
+    };
     let rows = vec![
-        row("Paid at the beginning", all(|s| format!("{:.0}", s.capital))),
+        row(
+            "Paid at the beginning",
+            all(|s| format!("{:.0}", s.capital)),
+        ),
         row("  grant", all(|s| format!("{:.0}", s.grant))),
         row(
             "Parts bought later",
-            all(|s| format!("{:.0}", s.by_year.iter().skip(1).map(|year| year.capital).sum::<f64>())),
+            all(|s| {
+                format!(
+                    "{:.0}",
+                    s.by_year
+                        .iter()
+                        .skip(1)
+                        .map(|year| year.capital)
+                        .sum::<f64>()
+                )
+            }),
         ),
         row("Present cost", all(|s| format!("{:.0}", s.present_cost))),
         row(
             "  against today",
-            all(|s| s.net_present_saving.map_or_else(|| "–".to_owned(), |saving| format!("{saving:+.0}"))),
+            all(|s| {
+                s.net_present_saving
+                    .map_or_else(|| "–".to_owned(), |saving| format!("{saving:+.0}"))
+            }),
         ),
-        row("Paid for itself", all(|s| s.payback.clone().unwrap_or_else(|| "–".to_owned()))),
-        row("Cost of a kWh of heat", all(|s| or_dash(s.cost_per_kwh_heat, 3))),
-        row("Carbon, t CO2e", all(|s| format!("{:.1}", s.carbon_kg / 1000.0))),
+        row(
+            "Paid for itself",
+            all(|s| s.payback.clone().unwrap_or_else(|| "–".to_owned())),
+        ),
+        row(
+            "Cost of a kWh of heat",
+            all(|s| or_dash(s.cost_per_kwh_heat, 3)),
+        ),
+        row(
+            "Carbon, t CO2e",
+            all(|s| format!("{:.1}", s.carbon_kg / 1000.0)),
+        ),
     ];
-    let table = plain_table_within(WIDTH, std::iter::once(currency.to_owned()).chain(names), rows);
-    format!("{}\n{table}", wrapped(&format!("Over the years: {}", lifetime.terms), "", "  "))
+    let table = plain_table_within(
+        WIDTH,
+        std::iter::once(currency.to_owned()).chain(names),
+        rows,
+    );
+    format!(
+        "{}\n{table}",
+        wrapped(&format!("Over the years: {}", lifetime.terms), "", "  ")
+    )
 }

@@ -59,7 +59,9 @@ impl Lever {
                 }
             }
             Self::Indoor => {
-                let warmer_k = contenders.get(choice).map_or(0.0, |contender| value - contender.indoor_c);
+                let warmer_k = contenders
+                    .get(choice)
+                    .map_or(0.0, |contender| value - contender.indoor_c);
                 for contender in contenders {
                     contender.indoor_c += warmer_k;
                     let plan = plan(contender);
@@ -109,12 +111,20 @@ impl Lever {
                     let built = buried.design.with_length(value).build(hours);
                     **buried = built.map_err(|error| {
                         let place = Place::field(self.name());
-                        Problem::new(place, format!("a loop of {value:.0} m: {}", error.why), "a loop whose response can be made", "give another length")
+                        Problem::new(
+                            place,
+                            format!("a loop of {value:.0} m: {}", error.why),
+                            "a loop whose response can be made",
+                            "give another length",
+                        )
                     })?;
                 }
             }
             (Self::Capital, _) => {
-                contender.outlay = contender.outlay.as_ref().map(|outlay| outlay.with_capital(value));
+                contender.outlay = contender
+                    .outlay
+                    .as_ref()
+                    .map(|outlay| outlay.with_capital(value));
             }
             (Self::Grant, _) => {
                 if let Some(outlay) = &mut contender.outlay {

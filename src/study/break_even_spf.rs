@@ -78,11 +78,19 @@ impl Compared {
         // Tax that is added is shared like the amounts it is taken of.
         let taxed = |total: f64, energy: f64, standing: f64| {
             let before = energy + standing;
-            if before > 0.0 { total * energy / before } else { 0.0 }
+            if before > 0.0 {
+                total * energy / before
+            } else {
+                0.0
+            }
         };
         let fuel_standing = today.costs.fuel_standing;
         let fuel = taxed(today.costs.fuel, today.costs.fuel_energy, fuel_standing);
-        let electricity = taxed(choice.costs.electricity, choice.costs.electricity_energy, choice.costs.electricity_standing);
+        let electricity = taxed(
+            choice.costs.electricity,
+            choice.costs.electricity_energy,
+            choice.costs.electricity_standing,
+        );
         let prices = Prices {
             electricity_per_kwh: electricity / pump.electricity_kwh(),
             fuel_per_kwh: fuel / boiler.fuel_kwh,

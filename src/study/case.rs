@@ -100,7 +100,10 @@ impl Case {
     pub fn pair(&self, choice: usize) -> Option<Self> {
         let contenders = vec![
             self.contenders.first()?.clone(),
-            self.contenders.get(choice).filter(|contender| !contender.today)?.clone(),
+            self.contenders
+                .get(choice)
+                .filter(|contender| !contender.today)?
+                .clone(),
         ];
         Some(Self {
             contenders,
@@ -112,7 +115,9 @@ impl Case {
     /// Where a lever was moved to for a choice; nothing where it stands as the brief put it.
     pub(super) fn moved_to(&self, lever: Lever, choice: usize) -> Option<f64> {
         let values = &self.moved.as_ref()?.values;
-        let own = values.iter().find(|(moved, of, _)| *moved == lever && *of == choice);
+        let own = values
+            .iter()
+            .find(|(moved, of, _)| *moved == lever && *of == choice);
         own.map(|(_, _, value)| *value)
     }
 
@@ -133,7 +138,10 @@ impl Case {
             moved: None,
             ..self.clone()
         };
-        let mut values = self.moved.take().map_or_else(Vec::new, |moved| moved.values);
+        let mut values = self
+            .moved
+            .take()
+            .map_or_else(Vec::new, |moved| moved.values);
         let kept = values.clone();
         let mut problems = Problems::new();
         for &(lever, value) in moves {
@@ -144,7 +152,10 @@ impl Case {
             }
         }
         if let Err(problems) = problems.or(()) {
-            self.moved = (!kept.is_empty()).then_some(Moved { before, values: kept });
+            self.moved = (!kept.is_empty()).then_some(Moved {
+                before,
+                values: kept,
+            });
             return Err(problems);
         }
         values.sort_by_key(|(lever, of, _)| (lever.order(), *of));
@@ -152,12 +163,18 @@ impl Case {
         let mut contenders = before.to_vec();
         for &(lever, of, value) in &values {
             if let Err(problems) = lever.act(value, &mut contenders, of, hours) {
-                self.moved = (!kept.is_empty()).then_some(Moved { before, values: kept });
+                self.moved = (!kept.is_empty()).then_some(Moved {
+                    before,
+                    values: kept,
+                });
                 return Err(problems);
             }
         }
         // Another loop has another past; otherwise the past is scaled when the year is run.
-        for (_, of, _) in values.iter().filter(|(lever, _, _)| *lever == Lever::LoopLength) {
+        for (_, of, _) in values
+            .iter()
+            .filter(|(lever, _, _)| *lever == Lever::LoopLength)
+        {
             let year = contenders[*of].shown_year;
             contenders[*of].aged = brief.aged(&contenders[*of], year);
         }
@@ -245,7 +262,10 @@ impl Case {
 impl Contender {
     /// Steady loss from the set point at the design outdoor temperature, gains not counted, kW.
     pub fn design_load_kw(&self) -> f64 {
-        self.system.home.fabric.design_load_kw(self.indoor_c, self.design_outdoor_c)
+        self.system
+            .home
+            .fabric
+            .design_load_kw(self.indoor_c, self.design_outdoor_c)
     }
 
     /// Whether the fuel's standing charge goes on.

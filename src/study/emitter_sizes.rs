@@ -44,17 +44,29 @@ pub fn emitter_sizes(pair: &Pair) -> Result<Vec<EmitterSize>, Problems> {
         return Ok(Vec::new());
     }
     let flows = (0..=STEPS).map(|i| FLOWS_C.0 + (FLOWS_C.1 - FLOWS_C.0) * i as f64 / STEPS as f64);
-    let (reached, beyond): (Vec<f64>, Vec<f64>) =
-        flows.partition(|&flow_c| Lever::FlowTemperature.check(flow_c, pair.case(), CHOICE).is_ok());
-    let settings: Vec<_> = reached.iter().map(|&flow_c| vec![(Lever::FlowTemperature, flow_c)]).collect();
+    let (reached, beyond): (Vec<f64>, Vec<f64>) = flows.partition(|&flow_c| {
+        Lever::FlowTemperature
+            .check(flow_c, pair.case(), CHOICE)
+            .is_ok()
+    });
+    let settings: Vec<_> = reached
+        .iter()
+        .map(|&flow_c| vec![(Lever::FlowTemperature, flow_c)])
+        .collect();
     let mut sizes = pair.at_each(&settings, |compared| EmitterSize {
-        flow_c: compared.case.contenders[CHOICE].system.home.emitters.design_flow_c(),
-        times_today: rated_output_kw(&compared.case.contenders[CHOICE], None) / rated_output_kw(pair.today(), None),
+        flow_c: compared.case.contenders[CHOICE]
+            .system
+            .home
+            .emitters
+            .design_flow_c(),
+        times_today: rated_output_kw(&compared.case.contenders[CHOICE], None)
+            / rated_output_kw(pair.today(), None),
         year: Some(year(&compared)),
     })?;
     sizes.extend(beyond.iter().map(|&flow_c| EmitterSize {
         flow_c,
-        times_today: rated_output_kw(pair.choice(), Some(flow_c)) / rated_output_kw(pair.today(), None),
+        times_today: rated_output_kw(pair.choice(), Some(flow_c))
+            / rated_output_kw(pair.today(), None),
         year: None,
     }));
     Ok(sizes)
@@ -76,7 +88,9 @@ fn rated_output_kw(contender: &Contender, flow_c: Option<f64>) -> f64 {
     /// EN 442: 75/65/20.
     const RATED_EXCESS_K: f64 = 50.0;
     let emitters = &contender.system.home.emitters;
-    let emitters = flow_c.map_or(*emitters, |flow_c| emitters.with_design_flow(flow_c, contender.indoor_c));
+    let emitters = flow_c.map_or(*emitters, |flow_c| {
+        emitters.with_design_flow(flow_c, contender.indoor_c)
+    });
     let mean_c = emitters.design_flow_c() - emitters.design_spread_k() / 2.0;
     let excess_k = mean_c - contender.indoor_c;
     emitters.design_load_kw() * (RATED_EXCESS_K / excess_k).powf(emitters.kind().exponent())

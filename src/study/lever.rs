@@ -109,7 +109,10 @@ impl Lever {
 
     /// Its place in the order in which levers act.
     pub(super) fn order(self) -> usize {
-        Self::ALL.iter().position(|lever| *lever == self).unwrap_or(usize::MAX)
+        Self::ALL
+            .iter()
+            .position(|lever| *lever == self)
+            .unwrap_or(usize::MAX)
     }
 
     /// The range it is looked at over for a choice; nothing where the choice has no such quantity.
@@ -123,7 +126,10 @@ impl Lever {
         let (low, high) = match self {
             Self::ElectricityRate | Self::FuelRate => (0.2, 3.0),
             Self::HeatLoss => (0.5, 1.5),
-            Self::FlowTemperature => (35.0, self.highest_flow_c(case, choice).unwrap_or(65.0).min(65.0)),
+            Self::FlowTemperature => (
+                35.0,
+                self.highest_flow_c(case, choice).unwrap_or(65.0).min(65.0),
+            ),
             Self::Indoor => (15.0, 25.0),
             Self::HotWater => (0.0, 3.0),
             Self::RatedOutput => {
@@ -165,7 +171,9 @@ impl Lever {
             Self::FieldFactor => named(bounds::FIELD_FACTOR),
             Self::HeatLoss | Self::LoopResistance => from_to(0.01, 100.0),
             Self::LoopLength => from_to(1.0, 10_000.0),
-            Self::ElectricityRate | Self::FuelRate | Self::HotWater | Self::ElectricityCarbon => from_to(0.0, 100.0),
+            Self::ElectricityRate | Self::FuelRate | Self::HotWater | Self::ElectricityCarbon => {
+                from_to(0.0, 100.0)
+            }
             Self::Capital | Self::Grant => from_to(0.0, 1e9),
         }
     }
@@ -177,8 +185,12 @@ impl Lever {
             return None;
         };
         let limits = system.machine.limits();
-        let ground = contender.aged.map_or_else(Memory::default, |aged| aged.memory);
-        let coldest = system.source.cold_offer(contender.design_outdoor_c, &ground);
+        let ground = contender
+            .aged
+            .map_or_else(Memory::default, |aged| aged.memory);
+        let coldest = system
+            .source
+            .cold_offer(contender.design_outdoor_c, &ground);
         Some(limits.highest_flow_at(coldest.open_c))
     }
 
@@ -188,10 +200,18 @@ impl Lever {
     /// A value outside what is possible, a flow that the machine does not reach, a quantity that the choice does not have.
     pub fn check(self, value: f64, case: &Case, choice: usize) -> Result<(), Problems> {
         let refuse = |found: String, allowed: String, remedy: &str| {
-            Err(Problems::from(Problem::new(Place::field(self.name()), found, allowed, remedy)))
+            Err(Problems::from(Problem::new(
+                Place::field(self.name()),
+                found,
+                allowed,
+                remedy,
+            )))
         };
         if self.now(case, choice).is_none() {
-            let label = case.contenders.get(choice).map_or("", |contender| &contender.system.label);
+            let label = case
+                .contenders
+                .get(choice)
+                .map_or("", |contender| &contender.system.label);
             let has: Vec<_> = Self::ALL
                 .iter()
                 .filter(|lever| lever.now(case, choice).is_some())
@@ -220,7 +240,9 @@ impl Lever {
             && value > highest_c
         {
             return refuse(
-                format!("a design flow of {value:.1} °C, which the machine does not reach on the design day"),
+                format!(
+                    "a design flow of {value:.1} °C, which the machine does not reach on the design day"
+                ),
                 format!("at most {highest_c:.1} °C"),
                 "choose larger emitters or a machine that reaches more",
             );
@@ -232,14 +254,18 @@ impl Lever {
     pub fn now(self, case: &Case, choice: usize) -> Option<f64> {
         let contender = case.contenders.get(choice)?;
         let stands = match (self, &contender.system.heating) {
-            (Self::FuelRate, _) => {
-                case.contenders.iter().any(|contender| contender.fuel.is_some()).then_some(1.0)
-            }
+            (Self::FuelRate, _) => case
+                .contenders
+                .iter()
+                .any(|contender| contender.fuel.is_some())
+                .then_some(1.0),
             (Self::ElectricityRate | Self::HeatLoss | Self::ElectricityCarbon, _) => Some(1.0),
             (Self::HotWater, _) => contender.system.home.hot_water.as_ref().map(|_| 1.0),
             (Self::FlowTemperature, _) => Some(contender.system.home.emitters.design_flow_c()),
             (Self::Indoor, _) => Some(contender.indoor_c),
-            (Self::RatedOutput, Heating::HeatPump(system)) => Some(system.machine.rated_output_kw()),
+            (Self::RatedOutput, Heating::HeatPump(system)) => {
+                Some(system.machine.rated_output_kw())
+            }
             (Self::FieldFactor, Heating::HeatPump(system)) => Some(system.machine.field_factor()),
             (Self::LoopResistance, Heating::HeatPump(system)) => {
                 matches!(system.source, Source::Ground(_)).then_some(1.0)
@@ -248,8 +274,15 @@ impl Lever {
                 Source::Buried(buried) => Some(buried.length_m()),
                 _ => None,
             },
-            (Self::RatedOutput | Self::FieldFactor | Self::LoopResistance | Self::LoopLength, _) => None,
-            (Self::Capital, _) => contender.outlay.as_ref().map(|outlay| outlay.capital()).filter(|capital| *capital > 0.0),
+            (
+                Self::RatedOutput | Self::FieldFactor | Self::LoopResistance | Self::LoopLength,
+                _,
+            ) => None,
+            (Self::Capital, _) => contender
+                .outlay
+                .as_ref()
+                .map(|outlay| outlay.capital())
+                .filter(|capital| *capital > 0.0),
             (Self::Grant, _) => contender.outlay.as_ref().map(|outlay| outlay.grant),
         };
         stands.map(|stands| case.moved_to(self, choice).unwrap_or(stands))
@@ -258,10 +291,16 @@ impl Lever {
     /// What has to be done again when it is moved.
     pub(super) fn again(self) -> Again {
         match self {
-            Self::ElectricityRate | Self::FuelRate | Self::Capital | Self::Grant | Self::ElectricityCarbon => Again::Bills,
-            Self::FlowTemperature | Self::RatedOutput | Self::FieldFactor | Self::LoopResistance | Self::LoopLength => {
-                Again::Choice
-            }
+            Self::ElectricityRate
+            | Self::FuelRate
+            | Self::Capital
+            | Self::Grant
+            | Self::ElectricityCarbon => Again::Bills,
+            Self::FlowTemperature
+            | Self::RatedOutput
+            | Self::FieldFactor
+            | Self::LoopResistance
+            | Self::LoopLength => Again::Choice,
             Self::HeatLoss | Self::Indoor | Self::HotWater => Again::Everyone,
         }
     }

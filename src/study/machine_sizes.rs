@@ -94,32 +94,50 @@ fn size(compared: &Compared, load_kw: f64, mild_kw: f64) -> Option<MachineSize> 
     let [today, outcome] = &compared.outcomes;
     let sums = outcome.mean_sums();
     let heat_kwh = sums.space_heat_kwh() + sums.water_heat_kwh();
-    let ground = contender.aged.map_or_else(Memory::default, |aged| aged.memory);
+    let ground = contender
+        .aged
+        .map_or_else(Memory::default, |aged| aged.memory);
     let cold = coldest(system, contender.design_outdoor_c, &ground);
     let mild = mild_side(system, &ground, compared.case.site.outdoor_c.len());
-    let least_kw = system.machine.least_output_kw(&mild, flow_c(contender, mild_kw));
+    let least_kw = system
+        .machine
+        .least_output_kw(&mild, flow_c(contender, mild_kw));
     Some(MachineSize {
         rated_kw: system.machine.rated_output_kw(),
         cost: outcome.costs.total,
         saving: today.costs.total - outcome.costs.total,
         spf_h4: sums.spf_h4(),
         backup_share: (sums.backup_kwh + sums.immersion_kwh) / heat_kwh,
-        coldest_night_cover: system.machine.greatest_output_kw(&cold, flow_c(contender, load_kw)) / load_kw,
+        coldest_night_cover: system
+            .machine
+            .greatest_output_kw(&cold, flow_c(contender, load_kw))
+            / load_kw,
         starts: sums.starts,
         least_over_mild_load: least_kw / mild_kw,
         hours_short: outcome.mean(|year| f64::from(year.hours_short)),
-        min_indoor_c: outcome.years.iter().map(|year| year.min_indoor_c).fold(f64::INFINITY, f64::min),
+        min_indoor_c: outcome
+            .years
+            .iter()
+            .map(|year| year.min_indoor_c)
+            .fold(f64::INFINITY, f64::min),
     })
 }
 
 fn flow_c(contender: &Contender, load_kw: f64) -> f64 {
-    contender.system.home.emitters.at_load(load_kw.max(0.0), contender.indoor_c).flow_c
+    contender
+        .system
+        .home
+        .emitters
+        .at_load(load_kw.max(0.0), contender.indoor_c)
+        .flow_c
 }
 
 /// What the machine draws on while it is mild outdoors: that air, ground and water at the mean of their year.
 fn mild_side(system: &MachineSystem, ground: &Memory, hours: usize) -> ColdSide {
     let offers = (0..hours).map(|hour| system.source.offer(hour, MILD_C, ground));
-    let sum = offers.fold((0.0, 0.0), |sum, offer| (sum.0 + offer.open_c, sum.1 + offer.k_per_kw));
+    let sum = offers.fold((0.0, 0.0), |sum, offer| {
+        (sum.0 + offer.open_c, sum.1 + offer.k_per_kw)
+    });
     ColdSide {
         open_c: sum.0 / hours as f64,
         k_per_kw: sum.1 / hours as f64,
@@ -129,10 +147,19 @@ fn mild_side(system: &MachineSystem, ground: &Memory, hours: usize) -> ColdSide 
 
 /// The stretch of sizes around the cheapest whose cost is told as the same and that leave no more hours short than the largest.
 fn alike(sizes: &[MachineSize]) -> Option<(f64, f64)> {
-    let fewest_short = sizes.iter().map(|size| size.hours_short).fold(f64::INFINITY, f64::min);
+    let fewest_short = sizes
+        .iter()
+        .map(|size| size.hours_short)
+        .fold(f64::INFINITY, f64::min);
     let warm = |size: &MachineSize| size.hours_short <= fewest_short + 0.5;
-    let least = sizes.iter().filter(|size| warm(size)).map(|size| size.cost).fold(f64::INFINITY, f64::min);
-    let cheapest = sizes.iter().position(|size| warm(size) && size.cost == least)?;
+    let least = sizes
+        .iter()
+        .filter(|size| warm(size))
+        .map(|size| size.cost)
+        .fold(f64::INFINITY, f64::min);
+    let cheapest = sizes
+        .iter()
+        .position(|size| warm(size) && size.cost == least)?;
     let same = |size: &&MachineSize| warm(size) && size.cost <= least + THE_SAME * least.abs();
     let first = sizes[..=cheapest].iter().rev().take_while(same).last()?;
     let last = sizes[cheapest..].iter().take_while(same).last()?;

@@ -77,7 +77,9 @@ impl Pair {
         let outcome = |contender: usize| match again {
             None => Ok(self.outcomes[contender].clone()),
             Some(Again::Everyone) => case.run_one(&case.contenders[contender], None),
-            Some(Again::Choice) if contender == CHOICE => case.run_one(&case.contenders[contender], None),
+            Some(Again::Choice) if contender == CHOICE => {
+                case.run_one(&case.contenders[contender], None)
+            }
             Some(Again::Choice | Again::Bills) => self.counted_again(&case, contender),
         };
         let outcomes = [outcome(0)?, outcome(CHOICE)?];
@@ -93,8 +95,14 @@ impl Pair {
             &was.electricity,
             was.fuel.as_ref(),
         )?;
-        let carbon_times = case.moved_to(Lever::ElectricityCarbon, CHOICE).unwrap_or(1.0);
-        Ok(Outcome { costs, ..was.clone() }.with_electricity_carbon_times(carbon_times))
+        let carbon_times = case
+            .moved_to(Lever::ElectricityCarbon, CHOICE)
+            .unwrap_or(1.0);
+        Ok(Outcome {
+            costs,
+            ..was.clone()
+        }
+        .with_electricity_carbon_times(carbon_times))
     }
 
     /// The pair at each of several settings, on all cores; results stand in the order of the settings whatever the number of
@@ -107,8 +115,10 @@ impl Pair {
         settings: &[Vec<(Lever, f64)>],
         look: impl Fn(Compared) -> T + Sync,
     ) -> Result<Vec<T>, Problems> {
-        let seen: Vec<Result<T, Problems>> =
-            settings.par_iter().map(|moves| self.at(moves).map(&look)).collect();
+        let seen: Vec<Result<T, Problems>> = settings
+            .par_iter()
+            .map(|moves| self.at(moves).map(&look))
+            .collect();
         seen.into_iter().collect()
     }
 }

@@ -4,7 +4,7 @@ use super::case::Case;
 use super::lever::Lever;
 use super::pair::CHOICE;
 
-/// From a low to a high value, both about as likely to be passed as one in ten.
+/// From a low to a high value; beyond them is unlikely.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Spread {
     /// Low value, in the unit of the lever.
@@ -21,7 +21,12 @@ const COMMON: &str = "common practice, no source";
 /// The usual spread of a lever of a pair about where it stands; nothing for a lever that is chosen rather than uncertain, or that
 /// the choice does not have.
 pub fn usual_spread(lever: Lever, case: &Case) -> Option<Spread> {
-    let now = lever.now(case, CHOICE)?;
+    spread_of(lever, case, CHOICE)
+}
+
+/// The same for any choice of a case.
+pub(super) fn spread_of(lever: Lever, case: &Case, choice: usize) -> Option<Spread> {
+    let now = lever.now(case, choice)?;
     let times = |low: f64, high: f64, from| Spread {
         low: now * low,
         high: now * high,
@@ -48,7 +53,7 @@ pub fn usual_spread(lever: Lever, case: &Case) -> Option<Spread> {
         Lever::ElectricityCarbon => times(0.7, 1.2, COMMON),
         Lever::LoopLength | Lever::RatedOutput | Lever::Grant => return None,
     };
-    let range = lever.range(case, CHOICE)?;
+    let range = lever.range(case, choice)?;
     let spread = Spread {
         low: spread.low.max(range.low),
         high: spread.high.min(range.high),

@@ -40,7 +40,9 @@ pub fn swings(pair: &Pair, measure: Measure) -> Result<Vec<Swing>, Problems> {
             Some((lever, now, usual_spread(lever, pair.case())?))
         })
         .collect();
-    let ends = levers.iter().flat_map(|(lever, _, spread)| [(*lever, spread.low), (*lever, spread.high)]);
+    let ends = levers
+        .iter()
+        .flat_map(|(lever, _, spread)| [(*lever, spread.low), (*lever, spread.high)]);
     let settings: Vec<_> = ends.map(|end| vec![end]).collect();
     let more = pair.at_each(&settings, |compared| compared.more(measure))?;
     let mut swings: Vec<Swing> = levers

@@ -42,7 +42,10 @@ pub fn two_levers(pair: &Pair, x: Lever, y: Lever, steps: usize) -> Result<TwoLe
             return Err(problems);
         }
     };
-    let settings: Vec<_> = ys.iter().flat_map(|&b| xs.iter().map(move |&a| vec![(x, a), (y, b)])).collect();
+    let settings: Vec<_> = ys
+        .iter()
+        .flat_map(|&b| xs.iter().map(move |&a| vec![(x, a), (y, b)]))
+        .collect();
     let saving = pair.at_each(&settings, |compared| {
         let [today, choice] = &compared.outcomes;
         today.costs.total - choice.costs.total
@@ -69,5 +72,7 @@ fn values(pair: &Pair, lever: Lever, steps: usize) -> Result<Vec<f64>, Problems>
         Lever::ElectricityRate | Lever::FuelRate => PRICES,
         _ => (low, high),
     };
-    Ok((0..steps).map(|i| low + (high - low) * i as f64 / (steps - 1) as f64).collect())
+    Ok((0..steps)
+        .map(|i| low + (high - low) * i as f64 / (steps - 1) as f64)
+        .collect())
 }
