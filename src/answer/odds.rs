@@ -124,18 +124,13 @@ pub fn odds(
     blocks: &[Vec<Sample>],
     seed: u64,
 ) -> Result<Option<OddsAnswer>, Problems> {
-    let column = |of: &dyn Fn(&Sample) -> f64| -> Vec<Vec<f64>> {
-        blocks
-            .iter()
-            .map(|block| block.iter().map(of).collect())
-            .collect()
-    };
+    let sampled = Sampled(blocks);
     let label = |place: usize| case.contenders[place].system.label.clone();
     let mut choices = Vec::new();
     let mut best: Option<(usize, f64)> = None;
     for place in 1..case.contenders.len() {
-        let saving = column(&|sample| sample.systems[0].cost - sample.systems[place].cost);
-        let Some(one) = choice(&label(place), place, &saving, &column, case) else {
+        let saving = sampled.each(|sample| sample.systems[0].cost - sample.systems[place].cost);
+        let Some(one) = choice(&label(place), place, &saving, &sampled, case) else {
             return Ok(None);
         };
         if best.is_none_or(|(_, median)| one.saving.p50 > median) {
@@ -149,7 +144,8 @@ pub fn odds(
     let mut between = Vec::new();
     for one in 1..case.contenders.len() {
         for other in one + 1..case.contenders.len() {
-            let saving = column(&|sample| sample.systems[other].cost - sample.systems[one].cost);
+            let saving =
+                sampled.each(|sample| sample.systems[other].cost - sample.systems[one].cost);
             if let Some(chance) =
                 Chance::of(saving.iter().map(Vec::as_slice), |saving| saving > 0.0)
             {
@@ -187,11 +183,24 @@ pub fn odds(
     }))
 }
 
+/// Whole blocks of samples.
+struct Sampled<'a>(&'a [Vec<Sample>]);
+
+impl Sampled<'_> {
+    /// A figure of each sample, block by block.
+    fn each(&self, of: impl Fn(&Sample) -> f64) -> Vec<Vec<f64>> {
+        self.0
+            .iter()
+            .map(|block| block.iter().map(&of).collect())
+            .collect()
+    }
+}
+
 fn choice(
     label: &str,
     place: usize,
     saving: &[Vec<f64>],
-    column: &dyn Fn(&dyn Fn(&Sample) -> f64) -> Vec<Vec<f64>>,
+    sampled: &Sampled<'_>,
     case: &Case,
 ) -> Option<ChoiceOdds> {
     let quantiles = |values: Vec<Vec<f64>>| {
@@ -199,17 +208,17 @@ fn choice(
         Some(QuantilesAnswer { p10, p50, p90 })
     };
     let chance = Chance::of(saving.iter().map(Vec::as_slice), |saving| saving > 0.0)?;
-    let spf = column(&|sample| sample.systems[place].spf_h4.unwrap_or(f64::NAN));
+    let spf = sampled.each(|sample| sample.systems[place].spf_h4.unwrap_or(f64::NAN));
     let has_spf = spf.iter().flatten().all(|spf| spf.is_finite());
     let saved = quantiles(saving.to_vec())?;
     Some(ChoiceOdds {
         label: label.to_owned(),
-        cost: quantiles(column(&|sample| sample.systems[place].cost))?,
+        cost: quantiles(sampled.each(|sample| sample.systems[place].cost))?,
         saving: saved,
-        carbon_kg: quantiles(column(&|sample| sample.systems[place].carbon_kg))?,
+        carbon_kg: quantiles(sampled.each(|sample| sample.systems[place].carbon_kg))?,
         spf_h4: if has_spf { quantiles(spf) } else { None },
-        hours_backup: quantiles(column(&|sample| sample.systems[place].hours_backup))?,
-        min_indoor_c: quantiles(column(&|sample| sample.systems[place].min_indoor_c))?,
+        hours_backup: quantiles(sampled.each(|sample| sample.systems[place].hours_backup))?,
+        min_indoor_c: quantiles(sampled.each(|sample| sample.systems[place].min_indoor_c))?,
         chance_cheaper: chance.chance,
         chance_error: chance.error.is_finite().then_some(chance.error),
         sentence: in_words(label, chance.chance, saved, case.currency.code()),

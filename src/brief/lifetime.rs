@@ -106,16 +106,13 @@ pub(super) fn terms(
         &bounds::DISCOUNT_RATE,
         &defaults::DISCOUNT_RATE,
     );
+    let none = (None, None);
     let mut course = |change: fn(&LifetimeTable) -> &Option<Leaf<Share>>,
                       given: fn(&LifetimeTable) -> &Option<Leaf<Vec<Share>>>,
                       default: &Default| {
-        path(
-            table.map(|table| (change(table), given(table))),
-            years,
-            default,
-            check,
-            notes,
-        )
+        let change = table.map_or(&none.0, |table| change(table));
+        let given = table.map_or(&none.1, |table| given(table));
+        path(change, given, years, default, check, notes)
     };
     let electricity = course(
         |t| &t.electricity_change,
@@ -141,14 +138,13 @@ pub(super) fn terms(
 
 /// A course that is a yearly change, or a list with a value for every year.
 fn path(
-    fields: Option<(&Option<Leaf<Share>>, &Option<Leaf<Vec<Share>>>)>,
+    change: &Option<Leaf<Share>>,
+    given: &Option<Leaf<Vec<Share>>>,
     years: Option<usize>,
     default: &Default,
     check: &mut Check,
     notes: &mut Notes,
 ) -> Option<Path> {
-    let none = (None, None);
-    let (change, given) = fields.unwrap_or((&none.0, &none.1));
     if let (Some(_), Some(leaf)) = (change, given) {
         check.refuse(
             &leaf.span(),
