@@ -26,6 +26,7 @@ pub mod year;
 pub mod bill;
 pub mod lifetime;
 pub mod plan;
+pub mod signature;
 // rank 5: cases side by side
 pub mod study;
 // rank 6: the contract

@@ -7,6 +7,7 @@ use serde::Deserialize;
 use super::defaults::{self, Default};
 use super::notes::Notes;
 use super::raw::{SystemKind, SystemTable};
+use super::system::PutIn;
 use crate::bounds::{self, Bound};
 use crate::document::{Check, Leaf, LeafValue, Section};
 use crate::lifetime::{Outlay, Part, Path, Terms};
@@ -33,34 +34,47 @@ pub(super) struct LifetimeTable {
     pub electricity_carbon_path: Option<Leaf<Vec<Share>>>,
 }
 
-/// What a system costs to put in and to keep.
+/// What a system costs besides its capital, and how long its parts last.
 #[derive(Debug, Deserialize, JsonSchema)]
 pub(super) struct OutlayTable {
-    /// The machine or boiler, put in; of today's system, what its replacement will cost.
-    pub machine: Option<Leaf<Money>>,
-    /// The loop in the ground.
-    #[serde(rename = "loop")]
-    pub ground_loop: Option<Leaf<Money>>,
-    /// New radiators or floors.
-    pub emitters: Option<Leaf<Money>>,
-    /// A hot-water store.
-    pub store: Option<Leaf<Money>>,
-    /// Work that is done once.
-    pub installation: Option<Leaf<Money>>,
     /// What others pay towards it.
     pub grant: Option<Leaf<Money>>,
     /// Maintenance of a year.
     pub yearly_maintenance: Option<Leaf<Money>>,
-    /// Years the machine or boiler lasts.
-    pub machine_life: Option<Leaf<Years>>,
-    /// Years the loop lasts.
-    pub loop_life: Option<Leaf<Years>>,
-    /// Years the emitters last.
-    pub emitters_life: Option<Leaf<Years>>,
-    /// Years the store lasts.
-    pub store_life: Option<Leaf<Years>>,
-    /// Years until today's boiler must be replaced.
+    /// Years the system lasts, or those of its parts that lives does not name.
+    pub life: Option<Leaf<Years>>,
+    /// Years that parts of the capital last, by their names.
+    pub lives: Option<Leaf<Lives>>,
+    /// Years until today's system must be replaced; its capital is what that costs.
     pub due_in: Option<Leaf<Years>>,
+}
+
+/// Years that parts last, by the names of the parts.
+#[derive(Debug, Clone, PartialEq)]
+pub(super) struct Lives(Vec<(String, Years)>);
+
+impl LeafValue for Lives {
+    fn read(value: &toml::Value) -> Result<Self, UnitProblem> {
+        let refuse = |found: String| UnitProblem {
+            found,
+            allowed: "years for each part".to_owned(),
+            remedy: "write for example { machine = \"20 years\", loop = \"50 years\" }".to_owned(),
+        };
+        let table = value.as_table().ok_or_else(|| refuse(value.to_string()))?;
+        let one = |(name, years): (&String, &toml::Value)| {
+            let years = Years::read(years).map_err(|_| refuse(format!("{name} = {years}")))?;
+            Ok((name.replace('_', " "), years))
+        };
+        table.iter().map(one).collect::<Result<_, _>>().map(Self)
+    }
+
+    fn schema() -> schemars::Schema {
+        schemars::json_schema!({
+            "type": "object",
+            "additionalProperties": { "type": "string" },
+            "examples": [{ "machine": "20 years", "loop": "50 years" }]
+        })
+    }
 }
 
 impl LeafValue for Money {
@@ -191,6 +205,20 @@ fn path(
     Some(Path::Given(multiples))
 }
 
+/// How long parts usually last, by the words their names hold; any other lasts as long as the machine or boiler.
+const USUAL_LIVES: [(&str, &Default); 10] = [
+    ("loop", &defaults::LOOP_LIFE),
+    ("bore", &defaults::LOOP_LIFE),
+    ("trench", &defaults::LOOP_LIFE),
+    ("radiator", &defaults::EMITTERS_LIFE),
+    ("emitter", &defaults::EMITTERS_LIFE),
+    ("floor", &defaults::EMITTERS_LIFE),
+    ("store", &defaults::STORE_LIFE),
+    ("cylinder", &defaults::STORE_LIFE),
+    ("installation", &defaults::INSTALLATION_LIFE),
+    ("work", &defaults::INSTALLATION_LIFE),
+];
+
 /// What a system costs to put in and keep. Outer: could not be read; inner: not given.
 #[allow(
     clippy::option_option,
@@ -198,8 +226,8 @@ fn path(
 )]
 pub(super) fn outlay(
     table: &SystemTable,
-    kind: Option<SystemKind>,
-    today: bool,
+    capital: Option<&PutIn>,
+    (kind, today): (Option<SystemKind>, bool),
     currency: Option<Currency>,
     check: &mut Check,
     notes: &mut Notes,
@@ -208,144 +236,19 @@ pub(super) fn outlay(
     if table.capital.is_none() && own.is_none() {
         return Some(None);
     }
-    let machine_life = if kind == Some(SystemKind::GasBoiler) {
-        &defaults::BOILER_LIFE
-    } else {
-        &defaults::MACHINE_LIFE
-    };
-    let due_in = own.and_then(|own| own.due_in.as_ref());
-    if let (Some(leaf), false) = (due_in, today) {
-        check.refuse(
-            &leaf.span(),
-            "due_in of a choice",
-            "due_in belongs to today's system: the years until it must be replaced",
-            "remove it",
-        );
-    }
-    let due_in_years = match due_in {
-        Some(_) => whole_years(
-            due_in,
-            &bounds::DUE_IN_YEARS,
-            &defaults::DUE_IN,
-            check,
-            notes,
-        ),
-        None if today => {
-            notes.used(&defaults::DUE_IN);
-            parse::<Years>(defaults::DUE_IN.value)
-                .ok()
-                .map(|years| years.years() as usize)
-        }
-        None => Some(0),
-    };
-    let mut parts = Vec::new();
-    let mut sound = due_in_years.is_some();
-    let mut buy = |label: &str,
-                   price: &Option<Leaf<Money>>,
-                   life: Option<&Leaf<Years>>,
-                   usual: &Default,
-                   check: &mut Check| {
-        if price.is_none() {
-            if let Some(leaf) = life {
-                check.refuse(
-                    &leaf.span(),
-                    format!("a life of the {label} without its price"),
-                    "",
-                    "give the price too",
-                );
-                sound = false;
-            }
-            return;
-        }
-        let amount = money(price, currency, check);
-        let life_years = whole_years(life, &bounds::PART_LIFE_YEARS, usual, check, notes);
-        match (amount, life_years) {
-            (Some(amount), Some(life_years)) => parts.push(Part {
-                label: label.to_owned(),
-                amount,
-                life_years,
-                due_in: due_in_years.unwrap_or(0),
-            }),
-            _ => sound = false,
-        }
-    };
-    let life = |of: fn(&OutlayTable) -> &Option<Leaf<Years>>| own.and_then(|own| of(own).as_ref());
-    if let Some(leaf) = &table.capital {
-        let by_part = own.is_some_and(|own| {
-            own.machine.is_some()
-                || own.ground_loop.is_some()
-                || own.emitters.is_some()
-                || own.store.is_some()
-                || own.installation.is_some()
-        });
-        if by_part {
-            check.refuse(
-                &leaf.span(),
-                "capital beside prices of its parts in outlay",
-                "one of them",
-                "remove capital, or the prices of the parts",
-            );
-            return None;
-        }
-        buy(
-            "machine",
-            &table.capital,
-            life(|o| &o.machine_life),
-            machine_life,
-            check,
-        );
-    } else if let Some(own) = own {
-        buy(
-            "machine",
-            &own.machine,
-            own.machine_life.as_ref(),
-            machine_life,
-            check,
-        );
-    }
-    if let Some(own) = own {
-        buy(
-            "loop",
-            &own.ground_loop,
-            own.loop_life.as_ref(),
-            &defaults::LOOP_LIFE,
-            check,
-        );
-        buy(
-            "emitters",
-            &own.emitters,
-            own.emitters_life.as_ref(),
-            &defaults::EMITTERS_LIFE,
-            check,
-        );
-        buy(
-            "store",
-            &own.store,
-            own.store_life.as_ref(),
-            &defaults::STORE_LIFE,
-            check,
-        );
-        buy(
-            "installation",
-            &own.installation,
-            None,
-            &defaults::INSTALLATION_LIFE,
-            check,
-        );
-    }
-    let mut paid = |price: Option<&Option<Leaf<Money>>>| match price {
-        Some(price) if price.is_some() => money(price, currency, check),
-        _ => Some(0.0),
-    };
-    let grant = paid(own.map(|own| &own.grant));
-    let maintenance = paid(own.map(|own| &own.yearly_maintenance));
+    let grant = own.map_or(Some(0.0), |own| money(&own.grant, currency, check));
+    let maintenance = own.map_or(Some(0.0), |own| {
+        money(&own.yearly_maintenance, currency, check)
+    });
+    let parts = parts(table, capital, (kind, today), check, notes);
+    let (grant, maintenance, parts) = (grant?, maintenance?, parts?);
     let outlay = Outlay {
         parts,
-        grant: grant?,
-        maintenance: maintenance?,
+        grant,
+        maintenance,
     };
     let grant_leaf = own.and_then(|own| own.grant.as_ref());
-    if let (true, Some(leaf)) = (outlay.grant > outlay.capital() && sound, grant_leaf) {
+    if let (true, Some(leaf)) = (outlay.grant > outlay.capital(), grant_leaf) {
         check.refuse(
             &leaf.span(),
             format!(
@@ -358,11 +261,134 @@ pub(super) fn outlay(
         );
         return None;
     }
-    sound.then_some(Some(outlay))
+    Some(Some(outlay))
+}
+
+/// The parts of the capital with their lives.
+fn parts(
+    table: &SystemTable,
+    capital: Option<&PutIn>,
+    (kind, today): (Option<SystemKind>, bool),
+    check: &mut Check,
+    notes: &mut Notes,
+) -> Option<Vec<Part>> {
+    let own = table.outlay.as_ref();
+    let due = own.and_then(|own| own.due_in.as_ref());
+    if let (Some(leaf), false) = (due, today) {
+        check.refuse(
+            &leaf.span(),
+            "due_in of a choice",
+            "due_in belongs to today's system: the years until it must be replaced",
+            "remove it",
+        );
+    }
+    let life = own.and_then(|own| own.life.as_ref());
+    let machine = if kind == Some(SystemKind::GasBoiler) {
+        &defaults::BOILER_LIFE
+    } else {
+        &defaults::MACHINE_LIFE
+    };
+    // Checked also where nothing is bought, so that no mistake waits.
+    let given_life = match life {
+        Some(_) => Some(whole_years(
+            life,
+            &bounds::PART_LIFE_YEARS,
+            machine,
+            check,
+            notes,
+        )?),
+        None => None,
+    };
+    let given_due = match due {
+        Some(_) => Some(whole_years(
+            due,
+            &bounds::DUE_IN_YEARS,
+            &defaults::DUE_IN,
+            check,
+            notes,
+        )?),
+        None => None,
+    };
+    let none = None;
+    let lives = own.map_or(&none, |own| &own.lives);
+    let named_lives = check.value(lives);
+    let PutIn { whole, parts } = capital?;
+    let bought = if parts.is_empty() {
+        whole
+            .iter()
+            .map(|whole| ("system".to_owned(), *whole))
+            .collect()
+    } else {
+        parts.clone()
+    };
+    if let (Some(leaf), Some(Lives(named))) = (lives, &named_lives) {
+        for (name, years) in named {
+            if !parts.iter().any(|(part, _)| part == name) {
+                let held: Vec<_> = parts
+                    .iter()
+                    .map(|(part, _)| format!("\"{part}\""))
+                    .collect();
+                check.refuse(
+                    &leaf.span(),
+                    format!("a life of \"{name}\", which is no part of the capital"),
+                    held.join(", "),
+                    "name a part as capital does",
+                );
+                return None;
+            }
+            if !bounds::PART_LIFE_YEARS.holds(years.years()) || years.years().fract() != 0.0 {
+                check.refuse(
+                    &leaf.span(),
+                    format!("{name} lasts {} years", years.years()),
+                    format!("a whole number, {}", bounds::PART_LIFE_YEARS.words()),
+                    "check the number and its unit",
+                );
+                return None;
+            }
+        }
+    }
+    let mut usual = |default: &Default| {
+        notes.used(default);
+        parse::<Years>(default.value)
+            .ok()
+            .map(|years| years.years() as usize)
+    };
+    let due_in = match given_due {
+        Some(years) => years,
+        None if today && !bought.is_empty() => usual(&defaults::DUE_IN)?,
+        None => 0,
+    };
+    bought
+        .into_iter()
+        .map(|(label, amount)| {
+            let named = named_lives
+                .iter()
+                .flat_map(|Lives(named)| named)
+                .find(|(name, _)| *name == label);
+            let known = USUAL_LIVES
+                .iter()
+                .find(|(word, _)| label.to_lowercase().contains(word));
+            let life_years = match (named, known, given_life) {
+                (Some((_, years)), _, _) => years.years() as usize,
+                (None, Some((_, default)), _) => usual(default)?,
+                (None, None, Some(years)) => years,
+                (None, None, None) => usual(machine)?,
+            };
+            Some(Part {
+                label,
+                amount,
+                life_years,
+                due_in,
+            })
+        })
+        .collect()
 }
 
 /// An amount from 0 in the currency of the tariffs.
 fn money(leaf: &Option<Leaf<Money>>, currency: Option<Currency>, check: &mut Check) -> Option<f64> {
+    if leaf.is_none() {
+        return Some(0.0);
+    }
     let money = check.value(leaf)?;
     let span = leaf.as_ref().map(Leaf::span)?;
     let currency = currency?;

@@ -3,10 +3,11 @@
 use std::path::PathBuf;
 
 use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
-use crate::answer::{Estimate, compose};
+use crate::answer::{Estimate, compare_patterns, compose};
 use crate::brief::{Brief, DEFAULTS};
 use crate::chart::{AnnualCost, Marks, SystemCost, annual_cost};
-use crate::report::{estimate_text, ledger_csv};
+use crate::home::Pattern;
+use crate::report::{estimate_text, home_text, ledger_csv, patterns_text};
 use crate::year::Ledger;
 
 /// Yearly cost and carbon of every system of a brief, beside what heats the home today.
@@ -33,6 +34,12 @@ pub struct Args {
     /// Say where each assumption is from.
     #[arg(long)]
     assumptions: bool,
+    /// Also say each system's design point, rooms, store and running pattern.
+    #[arg(long)]
+    home: bool,
+    /// Also run every system all day at its set point beside a set-back.
+    #[arg(long)]
+    patterns: bool,
     /// Print every default with its source, and stop.
     #[arg(long)]
     show_defaults: bool,
@@ -64,7 +71,10 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         outcomes.push(brief.case.run_one(contender, ledger.as_mut())?);
         ledgers.extend(ledger);
     }
-    let estimate = compose(&brief.case, &outcomes, &brief.told)?;
+    let mut estimate = compose(&brief.case, &outcomes, &brief.told)?;
+    if args.patterns {
+        estimate.patterns = compare_patterns(&brief.case, &usual_pattern())?;
+    }
     if let Some(folder) = &args.out {
         let mut files = pictures(&estimate, folder)?;
         for (i, (contender, ledger)) in brief.case.contenders.iter().zip(&ledgers).enumerate() {
@@ -85,8 +95,32 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     warn(&estimate.findings);
     match args.format {
         Format::Json => print_json(&estimate),
-        Format::Text => print(&estimate_text(&estimate, args.assumptions)),
+        Format::Text => print(&text(&estimate, args)),
     }
+}
+
+fn text(estimate: &Estimate, args: &Args) -> String {
+    let mut text = estimate_text(estimate, args.assumptions);
+    if args.home {
+        text += &format!("\n\n{}", home_text(estimate));
+    }
+    if args.patterns {
+        text += &format!("\n\n{}", patterns_text(estimate));
+    }
+    text
+}
+
+/// A set-back for briefs that have none: 7 to 9 and 16 to 23 h on working days, 7 to 23 h at weekends, 20 °C and 16 °C between.
+///
+/// The hours are those of the British standard assessment (SAP 10, table 9) \[from memory\]; the set-back is common practice.
+fn usual_pattern() -> Pattern {
+    let mut pattern = Pattern::continuous(20.0);
+    for hour in 0..24 {
+        let weekday = (7..9).contains(&hour) || (16..23).contains(&hour);
+        pattern.weekday_c[hour] = if weekday { 20.0 } else { 16.0 };
+        pattern.weekend_c[hour] = if (7..23).contains(&hour) { 20.0 } else { 16.0 };
+    }
+    pattern
 }
 
 fn pictures(estimate: &Estimate, folder: &std::path::Path) -> Result<Vec<NewFile>, Failure> {

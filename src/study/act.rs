@@ -54,7 +54,7 @@ impl Lever {
             Self::HotWater => {
                 for contender in contenders {
                     if let Some(water) = &mut contender.system.home.hot_water {
-                        water.daily_kwh *= value;
+                        times(&mut water.daily_kwh, value);
                     }
                 }
             }
@@ -64,7 +64,19 @@ impl Lever {
                     .map_or(0.0, |contender| value - contender.indoor_c);
                 for contender in contenders {
                     contender.indoor_c += warmer_k;
+                    let pattern = &mut contender.pattern;
+                    for set_point_c in pattern.weekday_c.iter_mut().chain(&mut pattern.weekend_c) {
+                        *set_point_c += warmer_k;
+                    }
                     let plan = plan(contender);
+                    plan.comfort_c += warmer_k;
+                    for target_c in plan
+                        .recovery
+                        .iter_mut()
+                        .flat_map(|ahead| &mut ahead.target_c)
+                    {
+                        *target_c += warmer_k;
+                    }
                     for set_point_c in plan.set_point_c.iter_mut().chain(&mut plan.backup_below_c) {
                         *set_point_c += warmer_k;
                     }

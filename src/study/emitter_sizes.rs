@@ -3,6 +3,7 @@
 use super::case::Contender;
 use super::lever::Lever;
 use super::pair::{CHOICE, Compared, Pair};
+use crate::home::Group;
 use crate::problem::Problems;
 use crate::year::Heating;
 
@@ -82,16 +83,19 @@ fn year(compared: &Compared) -> EmitterYear {
     }
 }
 
-/// Output at a mean water temperature 50 K above the room, kW: `Q (50/ΔT)^n` with the emitter's own exponent (EN 442: 1.3 for
+/// Output at a mean water temperature 50 K above the room, kW: `Q (50/ΔT)^n` of each group with its own exponent (EN 442: 1.3 for
 /// radiators) from its design point, or from another design flow (°C).
 fn rated_output_kw(contender: &Contender, flow_c: Option<f64>) -> f64 {
     /// EN 442: 75/65/20.
     const RATED_EXCESS_K: f64 = 50.0;
+    let room_c = contender.indoor_c;
     let emitters = &contender.system.home.emitters;
     let emitters = flow_c.map_or(*emitters, |flow_c| {
-        emitters.with_design_flow(flow_c, contender.indoor_c)
+        emitters.with_design_flow(flow_c, room_c)
     });
-    let mean_c = emitters.design_flow_c() - emitters.design_spread_k() / 2.0;
-    let excess_k = mean_c - contender.indoor_c;
-    emitters.design_load_kw() * (RATED_EXCESS_K / excess_k).powf(emitters.kind().exponent())
+    let rated = |group: &Group| {
+        let excess_k = (group.flow_c + group.return_c) / 2.0 - room_c;
+        group.share * (RATED_EXCESS_K / excess_k).powf(group.kind.exponent())
+    };
+    emitters.design_load_kw() * emitters.groups().iter().map(rated).sum::<f64>()
 }

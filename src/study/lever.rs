@@ -133,7 +133,7 @@ impl Lever {
             Self::Indoor => (15.0, 25.0),
             Self::HotWater => (0.0, 3.0),
             Self::RatedOutput => {
-                let load_kw = contender.design_load_kw();
+                let load_kw = contender.design_load_kw;
                 ((SIZES.0 * load_kw).min(now), (SIZES.1 * load_kw).max(now))
             }
             Self::FieldFactor => (0.6, 1.0),

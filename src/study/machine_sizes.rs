@@ -1,6 +1,6 @@
 //! Rated output against what it does: from too small to too large.
 
-use super::balance::coldest;
+use super::balance::cold_side;
 use super::case::Contender;
 use super::lever::Lever;
 use super::pair::{CHOICE, Compared, Pair};
@@ -66,7 +66,7 @@ pub fn machine_sizes(pair: &Pair) -> Result<Option<MachineSizes>, Problems> {
         return Ok(None);
     }
     let choice = pair.choice();
-    let load_kw = choice.design_load_kw();
+    let load_kw = choice.design_load_kw;
     let fabric = &choice.system.home.fabric;
     let mild_kw = fabric.design_load_kw(choice.indoor_c, MILD_C) - fabric.internal_gains_kw();
     let settings: Vec<_> = (0..=STEPS)
@@ -97,7 +97,7 @@ fn size(compared: &Compared, load_kw: f64, mild_kw: f64) -> Option<MachineSize> 
     let ground = contender
         .aged
         .map_or_else(Memory::default, |aged| aged.memory);
-    let cold = coldest(system, contender.design_outdoor_c, &ground);
+    let cold = cold_side(system, contender.design_outdoor_c, &ground);
     let mild = mild_side(system, &ground, compared.case.site.outdoor_c.len());
     let least_kw = system
         .machine
@@ -124,12 +124,9 @@ fn size(compared: &Compared, load_kw: f64, mild_kw: f64) -> Option<MachineSize> 
 }
 
 fn flow_c(contender: &Contender, load_kw: f64) -> f64 {
-    contender
-        .system
-        .home
-        .emitters
-        .at_load(load_kw.max(0.0), contender.indoor_c)
-        .flow_c
+    let emitters = &contender.system.home.emitters;
+    let water = emitters.at_load(load_kw.max(0.0), contender.indoor_c);
+    water.flow_c + emitters.header_k()
 }
 
 /// What the machine draws on while it is mild outdoors: that air, ground and water at the mean of their year.
