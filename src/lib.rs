@@ -24,6 +24,7 @@ pub mod tariff;
 pub mod year;
 // rank 4: what the hours add up to
 pub mod bill;
+pub mod lifetime;
 pub mod plan;
 pub mod signature;
 // rank 5: cases side by side

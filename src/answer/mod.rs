@@ -7,8 +7,12 @@ mod estimate;
 pub mod explain;
 pub mod ground;
 mod home;
+mod lever;
+pub mod lifetime;
 pub mod machine;
+pub mod odds;
 pub mod rating;
+pub mod study;
 pub mod tariff;
 pub mod weather;
 
@@ -21,3 +25,4 @@ pub use home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomAnswer, RoomsAnswer,
     StoreAnswer,
 };
+pub use lever::short;

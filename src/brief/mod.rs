@@ -15,6 +15,7 @@ mod ground;
 mod home;
 mod hot_water;
 mod leaves;
+mod lifetime;
 mod machine;
 mod notes;
 mod pattern;

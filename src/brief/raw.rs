@@ -8,6 +8,7 @@ use super::ground::{
     BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
 };
 use super::leaves::{Capital, ColdWater, HeatLossSource, HygieneBy, Line, SetBack};
+use super::lifetime::{LifetimeTable, OutlayTable};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind, TappingProfile, WarmUp};
@@ -26,6 +27,8 @@ pub(super) struct Brief {
     pub weather: Option<Section<Weather>>,
     /// Tariffs and carbon.
     pub energy: Option<Section<Energies>>,
+    /// How the years of a system's life are counted.
+    pub lifetime: Option<Section<LifetimeTable>>,
     /// What heats the home today.
     pub today: Option<Section<SystemTable>>,
     /// What could heat it instead, one table a choice.
@@ -353,6 +356,8 @@ pub(super) struct SystemTable {
     pub keeps_gas: Option<Leaf<bool>>,
     /// What it costs to put in, in one amount or part by part.
     pub capital: Option<Leaf<Capital>>,
+    /// What it costs besides, and how long its parts last.
+    pub outlay: Option<Section<OutlayTable>>,
 
     /// Another heat-loss coefficient, when insulating is part of the choice; the emitters stay as they are.
     pub heat_loss: Option<Leaf<HeatLossCoefficient>>,

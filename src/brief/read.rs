@@ -12,6 +12,7 @@ use super::bills::{BillsMade, Over, named, of_file};
 use super::energy::{Energy, energy};
 use super::files::Folder;
 use super::home::WeatherFacts;
+use super::lifetime::terms;
 use super::notes::Notes;
 use super::raw;
 use super::system::{Surroundings, contender};
@@ -164,18 +165,18 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             }
         }
     }
+    let told = raw
+        .choice
+        .iter()
+        .any(|choice| choice.capital.is_some() || choice.outlay.is_some());
+    let terms = terms(raw.lifetime.as_ref(), told, check, &mut notes);
     let Energy {
         currency,
         carbon_scope,
         ..
     } = energy?;
     let (weather, site, zone) = (weather?, site?, zone?);
-    let mut case = Case {
-        site,
-        time_zone: zone,
-        currency,
-        contenders,
-    };
+    let mut case = Case::new(site, zone, currency, terms?, contenders);
     let bills = match bills {
         Some(bills) if check.problems().is_empty() => Some(scaled(bills, &mut case, check)?),
         _ => None,

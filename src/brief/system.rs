@@ -1,5 +1,7 @@
 //! From a system's table to a contender of the case.
 
+use std::sync::Arc;
+
 use rust_decimal::prelude::ToPrimitive as _;
 
 use super::bills::BillsMade;
@@ -9,6 +11,7 @@ use super::files::Folder;
 use super::ground::{Ground, ground, whole_within};
 use super::home::{Warm, WeatherFacts, warm_side};
 use super::leaves::Capital;
+use super::lifetime::outlay;
 use super::machine::{MachineMade, machine};
 use super::notes::Notes;
 use super::raw::{Home, SystemKind, SystemTable};
@@ -78,6 +81,15 @@ pub(super) fn contender(
     );
     let keeps_gas = check.value(&table.keeps_gas);
     let capital = capital(table, around.energy, check);
+    let currency = around.energy.map(|energy| energy.currency);
+    let outlay = outlay(
+        table,
+        capital.as_ref(),
+        (kind, around.today),
+        currency,
+        check,
+        notes,
+    );
     let shown_year = shown_year(table, check);
     let kind = kind?;
     only_its_own_fields(table, kind, check);
@@ -146,7 +158,7 @@ pub(super) fn contender(
             kind: kind.word(),
             today: around.today,
             system,
-            plan,
+            plan: Arc::new(plan),
             electricity: energy.electricity.account.clone(),
             fuel: gas.map(|Supply { account, .. }| account.clone()),
             indoor_c: warm.indoor_c,
@@ -156,6 +168,7 @@ pub(super) fn contender(
             ability,
             capital: capital.whole,
             capital_parts: capital.parts,
+            outlay: outlay?,
             shown_year: shown_year?,
             aged: None,
         },
@@ -168,11 +181,11 @@ pub(super) fn contender(
 
 /// What a system costs to put in.
 #[derive(Debug, Default)]
-struct PutIn {
+pub(super) struct PutIn {
     /// Everything; nothing when it is not given.
-    whole: Option<f64>,
+    pub whole: Option<f64>,
     /// Part by part, where it is given so.
-    parts: Vec<(String, f64)>,
+    pub parts: Vec<(String, f64)>,
 }
 
 /// Money for the whole and for the parts; nothing when it is wrong.

@@ -12,8 +12,10 @@ mod failure;
 mod files;
 mod ground;
 mod machine;
+mod odds;
 mod output;
 mod rating;
+mod study;
 mod tariff;
 mod weather;
 
@@ -41,6 +43,8 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Estimate(estimate::Args),
+    Study(study::Args),
+    Odds(odds::Args),
     Bills(bills::Args),
     Explain(explain::Args),
     Cycle(cycle::Args),
@@ -63,6 +67,8 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
+        Command::Study(args) => study::run(args),
+        Command::Odds(args) => odds::run(args),
         Command::Bills(args) => bills::run(args),
         Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
