@@ -3,7 +3,8 @@
 use std::collections::BTreeMap;
 
 use super::estimate::{
-    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, HomeUsed, InputFile, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed,
+    YearAnswer,
 };
 use crate::problem::{Finding, Problems, Severity};
 use crate::study::{
@@ -26,6 +27,8 @@ pub struct Told {
     pub findings: Vec<Finding>,
     /// The machine of each contender, in their order.
     pub machines: Vec<Option<String>>,
+    /// The files that were read.
+    pub inputs: Vec<InputFile>,
 }
 
 /// Makes the estimate.
@@ -85,6 +88,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         carbon_scope: told.carbon_scope.clone(),
         assumptions: told.assumptions.clone(),
         findings,
+        inputs: told.inputs.clone(),
     })
 }
 

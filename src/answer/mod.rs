@@ -7,5 +7,6 @@ pub mod tariff;
 
 pub use compose::{Told, compose};
 pub use estimate::{
-    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, HomeUsed, InputFile, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed,
+    YearAnswer,
 };

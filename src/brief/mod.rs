@@ -5,6 +5,7 @@ mod demo;
 mod energy;
 mod files;
 mod home;
+mod locale;
 mod machine;
 mod notes;
 mod raw;

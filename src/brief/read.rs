@@ -10,6 +10,7 @@ use schemars::Schema;
 use super::energy::{Energy, energy};
 use super::files::Folder;
 use super::home::WeatherFacts;
+use super::locale::locale;
 use super::notes::Notes;
 use super::raw;
 use super::system::{Surroundings, contender};
@@ -18,6 +19,7 @@ use super::{defaults, demo};
 use crate::answer::Told;
 use crate::calendar::CivilHour;
 use crate::document::{Check, Document, Section, read_text};
+use crate::locale::Locale;
 use crate::problem::Problems;
 use crate::study::Case;
 use crate::weather::Weather;
@@ -30,6 +32,8 @@ pub struct Brief {
     pub case: Case,
     /// What the estimate tells beside the figures.
     pub told: Told,
+    /// How figures are written.
+    pub locale: Locale,
 }
 
 impl Brief {
@@ -40,7 +44,10 @@ impl Brief {
     pub fn read(path: &Path) -> Result<Self, Problems> {
         let text = read_text(path)?;
         let folder = path.parent().map(Path::to_owned).unwrap_or_default();
-        Self::parse(&path.display().to_string(), &text, &Folder::Disk(folder))
+        let folder = Folder::disk(folder);
+        let name = path.display().to_string();
+        folder.note(name.clone(), text.as_bytes());
+        Self::parse(&name, &text, &folder)
     }
 
     /// The demonstration brief that is built in.
@@ -48,7 +55,7 @@ impl Brief {
     /// # Errors
     /// As [`Brief::read`]; a test holds that there are none.
     pub fn demonstration() -> Result<Self, Problems> {
-        let folder = Folder::Embedded(demo::FOLDER);
+        let folder = Folder::embedded(demo::FOLDER);
         let text = folder.text(demo::BRIEF)?;
         Self::parse(&folder.name(demo::BRIEF), &text, &folder)
     }
@@ -89,6 +96,7 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         .map(|(weather, zone)| Arc::new(site(weather, zone)));
     let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
     labels_differ(raw, check);
+    let locale = locale(raw.report.as_ref(), check);
 
     // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
     let facts = weather.as_ref().map_or(
@@ -126,7 +134,7 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         carbon_scope,
         ..
     } = energy?;
-    let (weather, site, zone) = (weather?, site?, zone?);
+    let (weather, site, zone, locale) = (weather?, site?, zone?, locale?);
     Some(Brief {
         case: Case {
             site,
@@ -141,7 +149,9 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             assumptions: notes.into_vec(),
             findings,
             machines,
+            inputs: folder.inputs(),
         },
+        locale,
     })
 }
 

@@ -193,11 +193,13 @@ fn draw_label(scene: &mut Scene, flow: &Flow, left: bool, middle: f64, whole: f6
 }
 
 fn amount(flow: &Flow, whole: f64, marks: &Marks) -> String {
-    format!(
-        "{} kWh, {} %",
-        marks.number(flow.kwh, 0),
-        marks.number(flow.kwh / whole * 100.0, 0)
-    )
+    let percent = flow.kwh / whole * 100.0;
+    let share = if percent < 0.5 {
+        "under 1".to_owned()
+    } else {
+        marks.number(percent, 0)
+    };
+    format!("{} kWh, {share} %", marks.number(flow.kwh, 0))
 }
 
 fn alt(data: &EnergyFlow, sides: &[Vec<&Flow>; 2], marks: &Marks) -> String {

@@ -70,6 +70,7 @@ pub use cumulative_spend::{CumulativeSpend, SystemSpend, cumulative_spend};
 pub use demand_and_output::{DemandAndOutput, demand_and_output};
 pub use duration_curve::{DurationCurve, duration_curve};
 pub use energy_flow::{EnergyFlow, Flow, FlowKind, energy_flow};
+pub use font::clean as plain_line;
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
 pub use geometry::Rect;
 pub use label::Label;

@@ -1,9 +1,22 @@
-//! Answers as text and files.
+//! Answers as text, page and files.
+//!
+//! The long form is written once: `sections/*.md` are Markdown templates, `facts` is what they may speak of, `sentences` fills
+//! them, `blocks` reads the Markdown, `page` sets it as HTML. `pictures` fills the chart room's pictures.
 
+mod blocks;
+mod error;
+mod facts;
+mod hours;
 mod ledger;
+mod page;
+mod pictures;
+mod sentences;
 mod table;
 mod text;
 
+pub use error::ReportError;
 pub use ledger::{ledger_csv, ledger_legend};
+pub use page::report_html;
+pub use pictures::{Drawn, Material, pictures};
 pub use table::{plain_table, plain_table_within};
 pub use text::estimate_text;

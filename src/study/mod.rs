@@ -6,7 +6,7 @@ mod case;
 mod lever;
 mod outcome;
 
-pub use balance::{BalancePoint, balance_point};
+pub use balance::{BalancePoint, balance_point, output_range_kw};
 pub use break_even::{BreakEven, Crossing, break_even};
 pub use case::{Account, Case, Contender};
 pub use lever::Lever;
