@@ -70,6 +70,7 @@ impl Reader {
     }
 
     fn text(&mut self, text: &str) {
+        let text = &bound_units(text);
         match self.line.last_mut() {
             Some(last)
                 if last.strong == self.strong
@@ -156,6 +157,23 @@ impl Reader {
     }
 }
 
+/// `text` with no-break spaces between a number and its unit.
+fn bound_units(text: &str) -> String {
+    const UNITS: &[&str] = &["%", "°C", "K", "kW", "kWh", "W", "W/K", "kg", "m²", "h"];
+    let mut out = String::with_capacity(text.len());
+    for word in text.split_inclusive(' ') {
+        let unit = word.trim_end_matches([' ', '.', ',', ';', ':', ')']);
+        let after_number =
+            out.ends_with(' ') && out.trim_end().ends_with(|c: char| c.is_ascii_digit());
+        if after_number && UNITS.contains(&unit) {
+            out.pop();
+            out.push('\u{a0}');
+        }
+        out.push_str(word);
+    }
+    out
+}
+
 /// The text of a line without its looks.
 pub(super) fn plain(line: &[Span]) -> String {
     line.iter().map(|span| span.text.as_str()).collect()
@@ -182,6 +200,14 @@ mod tests {
         assert!(matches!(&read[4], Block::Picture { name, .. } if name == "name"));
         assert!(matches!(&read[5], Block::Heading(line) if plain(line) == "h"));
         assert_eq!(read.len(), 6);
+    }
+
+    #[test]
+    fn a_number_is_not_parted_from_its_unit() {
+        assert_eq!(
+            bound_units("electricity 17 % dearer, or 53 °C (now 5 K)."),
+            "electricity 17\u{a0}% dearer, or 53\u{a0}°C (now 5\u{a0}K)."
+        );
     }
 
     #[test]

@@ -376,7 +376,7 @@ fn next_steps(choices: &[&Value], estimate: &Estimate) -> Value {
         say(
             "The flow temperature that the radiators need.",
             format!(
-                "For {label} the answer turns within {NEAR_FLOW_K:.0} K of it. On a cold day turn the boiler's flow down step by step until a room no longer gets warm."
+                "For {label} the answer turns within {NEAR_FLOW_K:.0} K of it. On a cold day turn the boiler’s flow down step by step until a room no longer gets warm."
             ),
         );
     }

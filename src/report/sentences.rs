@@ -84,7 +84,7 @@ pub(super) fn sections(material: &Material<'_>, drawn: &[Drawn]) -> Result<Vec<S
 
 /// The heading of the report; plain text, no Markdown.
 const QUESTION: &str = "{% if choices|any_has('rated_output_kw') %}Would a heat pump be cheaper to run{% else %}What would be cheaper to run{% endif %} \
-than {{ today.label|short }}{% if home.label %} at {{ home.label|short }}{% endif %}?";
+than {{ 'the ' ~ today.kind_words }} of today?";
 
 fn environment<'a>(material: &Material<'_>, drawn: &[Drawn]) -> Result<Environment<'a>, Error> {
     let mut environment = Environment::new();
@@ -137,6 +137,12 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
     });
     environment.add_filter("carbon_against", move |saving: f64| {
         difference(saving, &|kg| format!("{}\u{a0}kg", marks.number(kg, 0)))
+    });
+    let write = money.clone();
+    environment.add_filter("against_today", move |saving: f64| {
+        let words = difference(saving, &|v| write(v, 0));
+        let than = if words.ends_with(" as") { "" } else { " than" };
+        format!("{words}{than} today")
     });
     let write = money.clone();
     environment.add_filter("more_or_less", move |more: f64| {
