@@ -123,30 +123,42 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
     let marks = locale.marks;
     let currency = currency.to_owned();
     let money = move |amount: f64, decimals: usize| marks.money_to(&currency, amount, decimals);
-    environment.add_filter("n", move |value: f64, decimals: usize| {
-        marks.number(value, decimals)
+    // What is missing is told by a dash, never by a nought.
+    let told = |value: &Value, write: &dyn Fn(f64) -> String| {
+        number(value).map_or_else(|| "–".to_owned(), write)
+    };
+    environment.add_filter("n", move |value: Value, decimals: usize| {
+        told(&value, &|v| marks.number(v, decimals))
     });
-    environment.add_filter("percent", move |value: f64, decimals: usize| {
-        format!("{}\u{a0}%", marks.number(value * 100.0, decimals))
-    });
-    let write = money.clone();
-    environment.add_filter("money", move |amount: f64| write(amount, 0));
-    let write = money.clone();
-    environment.add_filter("against", move |saving: f64| {
-        difference(saving, &|v| write(v, 0))
-    });
-    environment.add_filter("carbon_against", move |saving: f64| {
-        difference(saving, &|kg| format!("{}\u{a0}kg", marks.number(kg, 0)))
+    environment.add_filter("percent", move |value: Value, decimals: usize| {
+        told(&value, &|v| {
+            format!("{}\u{a0}%", marks.number(v * 100.0, decimals))
+        })
     });
     let write = money.clone();
-    environment.add_filter("against_today", move |saving: f64| {
-        let words = difference(saving, &|v| write(v, 0));
-        let than = if words.ends_with(" as") { "" } else { " than" };
-        format!("{words}{than} today")
+    environment.add_filter("money", move |amount: Value| {
+        told(&amount, &|v| write(v, 0))
     });
     let write = money.clone();
-    environment.add_filter("more_or_less", move |more: f64| {
-        difference(-more, &|v| write(v, 0))
+    environment.add_filter("against", move |saving: Value| {
+        told(&saving, &|saving| difference(saving, &|v| write(v, 0)))
+    });
+    environment.add_filter("carbon_against", move |saving: Value| {
+        told(&saving, &|saving| {
+            difference(saving, &|kg| format!("{}\u{a0}kg", marks.number(kg, 0)))
+        })
+    });
+    let write = money.clone();
+    environment.add_filter("against_today", move |saving: Value| {
+        told(&saving, &|saving| {
+            let words = difference(saving, &|v| write(v, 0));
+            let than = if words.ends_with(" as") { "" } else { " than" };
+            format!("{words}{than} today")
+        })
+    });
+    let write = money.clone();
+    environment.add_filter("more_or_less", move |more: Value| {
+        told(&more, &|more| difference(-more, &|v| write(v, 0)))
     });
     environment.add_filter(
         "show",
@@ -192,6 +204,11 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
             Ok(false)
         },
     );
+}
+
+/// A value as a number, where it is one.
+fn number(value: &Value) -> Option<f64> {
+    f64::try_from(value.clone()).ok()
 }
 
 /// A saving in words: so much less, so much more, or about the same when it would be written as nothing.
