@@ -109,7 +109,7 @@ fn write_section(
                     let svg = drawn.picture.svg_without_fonts()?;
                     let _ = write!(
                         out,
-                        "<figure>\n<div class=\"wide\" tabindex=\"0\" role=\"region\" aria-label=\"{}\">\n{svg}\n</div>\n\
+                        "<figure>\n<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{}\">\n{svg}\n</div>\n\
                          <figcaption>{}</figcaption>\n</figure>\n",
                         escaped(&format!("Picture: {} ({name})", drawn.picture.title)),
                         text(&caption)
@@ -129,7 +129,7 @@ fn write_table(out: &mut String, name: &str, head: &[Line], rows: &[Vec<Line>], 
     };
     let _ = write!(
         out,
-        "<div class=\"wide\" tabindex=\"0\" role=\"region\" aria-label=\"{}\">\n<table>\n<thead>\n<tr>",
+        "<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{}\">\n<table>\n<thead>\n<tr>",
         escaped(name)
     );
     for (column, cell) in head.iter().enumerate() {
