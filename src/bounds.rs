@@ -78,6 +78,26 @@ bounds! {
     HYSTERESIS_K = "store hysteresis", 1.0 ..= 30.0, "K";
     /// Cold-water temperature.
     COLD_WATER_C = "cold-water temperature", 0.0 ..= 30.0, "°C";
+    /// Air changes of a home.
+    AIR_CHANGES_PER_H = "air changes", 0.0 ..= 10.0, "1/h";
+    /// Heated volume of a home.
+    VOLUME_M3 = "heated volume", 20.0 ..= 10000.0, "m³";
+    /// One part of a home's heat loss.
+    PART_LOSS_W_PER_K = "part of the heat loss", 0.0 ..= 3000.0, "W/K";
+    /// Heat-loss coefficient of one room.
+    ROOM_LOSS_W_PER_K = "heat loss of a room", 0.0 ..= 500.0, "W/K";
+    /// Design heat load of one room.
+    ROOM_LOAD_KW = "heat load of a room", 0.0 ..= 20.0, "kW";
+    /// Radiators of one room at ΔT 50 K.
+    RADIATOR_KW = "radiator output at ΔT 50 K", 0.05 ..= 20.0, "kW";
+    /// Flow minus return.
+    SPREAD_K = "flow minus return", 1.0 ..= 30.0, "K";
+    /// What a buffer or low-loss header mixes away.
+    HEADER_K = "rise by a buffer or header", 0.0 ..= 15.0, "K";
+    /// Factor from a metered volume of gas to the conditions of its calorific value.
+    VOLUME_CORRECTION = "volume correction", 0.8 ..= 1.2, "";
+    /// Heat-loss coefficient per square metre of floor: from a passive house to an uninsulated cottage.
+    HEAT_LOSS_W_PER_K_M2 = "heat loss per floor area", 0.3 ..= 8.0, "W/K per m²";
     /// Coefficient of performance at a rating point.
     COP = "coefficient of performance", 1.0 ..= 12.0, "";
     /// Rated output of a machine or a backup heater.
@@ -98,6 +118,58 @@ bounds! {
     DIFFUSIVITY_M2_PER_S = "thermal diffusivity", 1.0e-7 ..= 3.0e-6, "m²/s";
     /// How far a loop's brine falls per kilowatt drawn.
     LOOP_K_PER_KW = "loop resistance", 0.05 ..= 10.0, "K/kW";
+    /// Coordinate of a bore or a trench.
+    GROUND_PLACE_M = "place on the plot", -1000.0 ..= 1000.0, "m";
+    /// Length of a bore that takes heat.
+    BORE_DEPTH_M = "bore depth", 5.0 ..= 400.0, "m";
+    /// Depth of the upper end of a bore.
+    BORE_BURIED_M = "depth of the bore's upper end", 0.0 ..= 20.0, "m";
+    /// Radius of a bore.
+    BORE_RADIUS_M = "bore radius", 0.03 ..= 0.3, "m";
+    /// Distance between the middles of bores; nearer ones are one bore.
+    BORE_DISTANCE_M = "distance between bores", 1.0 ..= 2000.0, "m";
+    /// Resistance from the wall of a bore to the brine.
+    BOREHOLE_M_K_PER_W = "borehole resistance", 0.01 ..= 0.6, "m K/W";
+    /// Distance between the middles of the two legs of a U-tube.
+    LEG_DISTANCE_M = "distance of the legs", 0.02 ..= 0.5, "m";
+    /// Conductivity of ground.
+    GROUND_W_PER_M_K = "conductivity of the ground", 0.2 ..= 7.0, "W/m/K";
+    /// Conductivity of grout.
+    GROUT_W_PER_M_K = "conductivity of the grout", 0.3 ..= 4.0, "W/m/K";
+    /// Outer diameter of a loop's pipe.
+    PIPE_OUTSIDE_M = "outer diameter of the pipe", 0.016 ..= 0.09, "m";
+    /// Wall of a loop's pipe.
+    PIPE_WALL_M = "wall of the pipe", 0.001 ..= 0.012, "m";
+    /// Conductivity of a pipe's wall.
+    PIPE_W_PER_M_K = "conductivity of the pipe", 0.1 ..= 2.0, "W/m/K";
+    /// Length of a trench.
+    TRENCH_LENGTH_M = "trench length", 5.0 ..= 2000.0, "m";
+    /// Distance of pipes in the ground; nearer ones are one pipe.
+    PIPE_DISTANCE_M = "distance between pipes", 0.1 ..= 20.0, "m";
+    /// Pipes side by side in a trench.
+    TRENCH_PIPES = "pipes side by side", 1.0 ..= 12.0, "";
+    /// Swing of the surface's temperature through the year, half from top to bottom.
+    SURFACE_SWING_K = "yearly swing of the surface", 0.0 ..= 30.0, "K";
+    /// A day of the year.
+    DAY_OF_YEAR = "day of the year", 1.0 ..= 366.0, "";
+    /// Geothermal gradient.
+    GRADIENT_K_PER_M = "geothermal gradient", -0.02 ..= 0.1, "K/m";
+    /// Heat put back into the ground in a year.
+    RECHARGE_KWH = "heat put back in a year", 0.0 ..= 100000.0, "kWh";
+    /// Flow of brine or well water.
+    SOURCE_FLOW_L_PER_S = "flow", 0.01 ..= 20.0, "L/s";
+    /// Efficiency of a pump from the plug to the water.
+    PUMP_EFFICIENCY = "efficiency of the pump", 0.05 ..= 0.9, "";
+    /// Share of antifreeze in brine, by mass: the range of the property polynomials.
+    ANTIFREEZE_SHARE = "share of antifreeze by mass", 0.0 ..= 0.6, "";
+    /// Well or surface water.
+    SOURCE_WATER_C = "well or surface water", 0.0 ..= 30.0, "°C";
+    /// Difference an exchanger needs.
+    APPROACH_K = "approach of the exchanger", 0.0 ..= 10.0, "K";
+    /// Head of a well pump.
+    HEAD_M = "pump head", 0.0 ..= 200.0, "m";
+    /// Year of a buried loop's life.
+    LOOP_YEAR = "year of the loop's life", 1.0 ..= 60.0, "";
     /// Carbon factor of any fuel or electricity.
     CARBON_KG_PER_KWH = "carbon factor", 0.0 ..= 2.0, "kg CO2e/kWh";
     /// Allowance from laboratory to home, as a multiplier of the laboratory figure.

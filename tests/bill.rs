@@ -7,8 +7,8 @@ use winterledger::bill::{self, Bill, Charge, Connection};
 use winterledger::calendar::{CivilHour, HourAxis};
 use winterledger::problem::Place;
 use winterledger::tariff::{
-    Band, Covers, Demand, Flows, Holidays, Metering, Prices, Rate, Span, Standing, StandingSpan,
-    Step, Steps, Tariff, Tax, When, Window,
+    Band, Covers, Days, Demand, Flows, Holidays, Metering, Prices, Rate, Span, Standing,
+    StandingSpan, Step, Steps, Tariff, Tax, When, Window,
 };
 use winterledger::units::{Currency, Fuel};
 
@@ -312,6 +312,49 @@ fn demand_counts_the_highest_hour_inside_its_window() {
         .position(|c| c.date == NaiveDate::from_ymd_opt(2023, 7, 4).unwrap() && c.hour == 16);
     kwh[july.unwrap()] = 4.0;
     assert_eq!(price(&tariff, &civil, &kwh).demand(), decimal("50.00"));
+}
+
+/// Half of January 2023 has half of its demand charge: 4 kW × 15.5/31 × 5.00 = 10.00.
+#[test]
+fn a_part_month_pays_its_share_of_the_demand_charge() {
+    let mut list = prices(vec![band("unit rate", Window::ALL_DAY, "0")], "0");
+    list.demand = Some(Demand {
+        amount: decimal("5"),
+        when: When::ALWAYS,
+    });
+    let tariff = tariff(Fuel::Electricity, list);
+    let civil = &year(2023)[..372];
+    assert_eq!(
+        price(&tariff, civil, &vec![4.0; 372]).demand(),
+        decimal("10.00")
+    );
+}
+
+/// Newfoundland is three and a half hours behind UTC, so hours begin at half past: the hour from Friday 23:30 is half
+/// on Saturday. 6 January 2023 was a Friday. 2 kWh at 0.30 on weekdays and 0.10 at weekends: 0.30 + 0.10.
+#[test]
+fn an_hour_over_midnight_takes_each_day_s_price() {
+    let days = |label: &str, days, amount: &str| Band {
+        when: When {
+            days,
+            ..When::ALWAYS
+        },
+        ..band(label, Window::ALL_DAY, amount)
+    };
+    let list = prices(
+        vec![
+            days("weekday", Days::WEEKDAYS, "0.30"),
+            days("weekend", Days::WEEKENDS, "0.10"),
+        ],
+        "0",
+    );
+    let tariff = tariff(Fuel::Electricity, list);
+    let start = "2023-01-07T03:00:00Z".parse().unwrap();
+    let civil = HourAxis { start, hours: 1 }.civil(chrono_tz::America::St_Johns);
+    assert_eq!((civil[0].hour, civil[0].minute), (23, 30));
+    let bill = price(&tariff, &civil, &[2.0]);
+    assert_eq!(bill.lines.len(), 2 + 1);
+    assert_eq!(bill.total(), decimal("0.40"));
 }
 
 /// From 1 July another price: 1 kWh an hour, 4344 h at 0.20 before (the clock change is in March), 4416 h at 0.30 after.

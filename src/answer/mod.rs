@@ -1,12 +1,22 @@
 //! The JSON contract as plain structs, and the making of the estimate from what the runs came to.
 
+pub mod bills;
 mod compose;
 pub mod cycle;
 mod estimate;
+pub mod explain;
+pub mod ground;
+mod home;
+pub mod machine;
+pub mod rating;
 pub mod tariff;
 
-pub use compose::{Told, compose};
+pub use compose::{BillsTold, Told, compare_patterns, compose};
 pub use estimate::{
-    Assumption, Estimate, HomeUsed, InputFile, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed,
-    YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, InputFile, LeverAnswer, MonthAnswer, SystemAnswer,
+    WeatherUsed, YearAnswer,
+};
+pub use home::{
+    DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomAnswer, RoomsAnswer,
+    StoreAnswer,
 };

@@ -38,7 +38,19 @@ defaults! {
     HOT_WATER_DAILY = "home.hot_water.daily_energy", "4 kWh",
         "typical UK use (published field figure, secondary source)";
     DRAWN_AT = "home.hot_water.drawn_at", "40 °C", "convention of Regulation (EU) No 811/2013 draws";
-    COLD_WATER = "home.hot_water.cold", "10 °C", "common practice, no source";
+    COLD_WATER = "home.hot_water.cold", "10 °C", "common practice, no source; used when the weather is no whole year";
+    USABLE = "home.hot_water.usable", "80 %", "common practice, no source";
+    HYGIENE_TEMPERATURE = "home.hot_water.hygiene_temperature", "60 °C", "UK HSE guidance for stored hot water";
+    HYGIENE_DAY = "home.hot_water.hygiene_day", "sunday", "common practice, no source";
+    SET_BACK = "home.pattern.set_back", "16 °C", "common practice, no source";
+    WARM_UP = "home.pattern.warm_up", "in time", "common practice, no source";
+    ROOM_SPREAD = "home.emitters.spread", "8 K", "beside a room table: EN 14511 spread at 55 °C, common practice, no source";
+    BILLS_EFFICIENCY = "home.bills.efficiency", "82 % gross",
+        "homes lie between 75 and 85 % gross (published field figures, secondary source)";
+    BILLS_EFFICIENCY_WITHIN = "home.bills.efficiency_within", "5 %", "the same published range";
+    HOT_WATER_SHARE = "home.bills.hot_water_share", "85 %", "common practice, no source: the rest is cooking";
+    HOT_WATER_SHARE_WITHIN = "home.bills.hot_water_share_within", "15 %", "common practice, no source";
+    VOLUME_CORRECTION = "home.bills.volume_correction", "1.02264", "British gas bills";
     STORE = "home.hot_water.store", "200 L", "common practice, no source";
     SET_POINT = "home.hot_water.setpoint", "50 °C", "common practice, no source";
     HYSTERESIS = "home.hot_water.hysteresis", "5 K", "common practice, no source";
@@ -53,6 +65,20 @@ defaults! {
         "published field efficiency 82.5 to 85.3 % gross over the ideal flue-loss curve (from memory)";
     LOOP_DEPTH = "choice.loop_depth", "1.2 m", "common practice, no source";
     SOIL_DIFFUSIVITY = "choice.soil_diffusivity", "5e-7 m²/s", "moist loam: common practice, no source";
+    GRADIENT = "choice.ground.gradient", "30 K/km", "common practice, no source";
+    BURIED = "choice.bore.buried", "1 m", "common practice, no source";
+    BORE_RADIUS = "choice.bore.radius", "65 mm", "common practice, no source";
+    GROUT = "choice.borehole.grout", "1.5 W/m/K", "within the published range of 0.9 to 1.8 W/m/K";
+    PIPE_OUTSIDE = "choice.pipe.outside", "40 mm", "common practice, no source";
+    PIPE_WALL = "choice.pipe.wall", "3.7 mm", "PE 100, SDR 11: common practice, no source";
+    PIPE_CONDUCTIVITY = "choice.pipe.conductivity", "0.42 W/m/K", "polyethylene: common practice, no source";
+    TRENCH_SPACING = "choice.trench.spacing", "0.5 m", "common practice, no source";
+    ANTIFREEZE = "choice.brine.fluid", "ethylene glycol", "common practice, no source";
+    ANTIFREEZE_SHARE = "choice.brine.share", "30 %", "common practice, no source";
+    BRINE_SPREAD = "choice.brine.flow", "3 K", "brine cools by this in the machine at its rating point (EN 14511: 0 to -3 °C)";
+    PUMP_EFFICIENCY = "choice.brine.pump_efficiency", "30 %", "from the plug to the water: common practice, no source";
+    APPROACH = "choice.well.approach", "0 K", "water through the machine itself unless an exchanger is given";
+    WELL_PUMP_EFFICIENCY = "choice.well.pump_efficiency", "40 %", "from the plug to the water: common practice, no source";
     BOILER_OUTPUT = "today.output", "24 kW", "common practice, no source";
     BACKUP_BAND = "backup starts below the set point by", "0.5 K", "common practice, no source";
 }

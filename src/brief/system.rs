@@ -2,20 +2,24 @@
 
 use rust_decimal::prelude::ToPrimitive as _;
 
+use super::bills::BillsMade;
 use super::defaults;
 use super::energy::{Energy, Supply};
 use super::files::Folder;
+use super::ground::{Ground, ground, whole_within};
 use super::home::{Warm, WeatherFacts, warm_side};
+use super::leaves::Capital;
 use super::machine::{MachineMade, machine};
 use super::notes::Notes;
 use super::raw::{Home, SystemKind, SystemTable};
+use crate::answer::RoomsAnswer;
 use crate::bounds;
 use crate::document::{Check, Leaf, Section};
 use crate::heater::{Boiler, BoilerEfficiency};
-use crate::plan::steady;
+use crate::plan::{Ability, following};
 use crate::problem::Finding;
-use crate::source::{AnnualSwing, GroundLoop, Source, undisturbed_c};
-use crate::study::Contender;
+use crate::source::{Memory, Source};
+use crate::study::{Contender, SHOWN_YEAR, design_point};
 use crate::units::{Money, TemperatureDifference, parse};
 use crate::year::{Heating, MachineSystem, Site, System};
 
@@ -23,6 +27,7 @@ use crate::year::{Heating, MachineSystem, Site, System};
 pub(super) struct Surroundings<'a> {
     pub home: &'a Section<Home>,
     pub facts: &'a WeatherFacts,
+    pub bills: Option<&'a BillsMade>,
     pub site: Option<&'a Site>,
     pub energy: Option<&'a Energy>,
     pub folder: &'a Folder,
@@ -34,6 +39,10 @@ pub(super) struct Made {
     pub contender: Contender,
     /// Its machine, where it has one.
     pub machine: Option<String>,
+    /// The room table's verdict, where there is one.
+    pub rooms: Option<RoomsAnswer>,
+    /// Transmission and ventilation, W/K, where they are known apart.
+    pub parts_w_per_k: Option<(f64, f64)>,
     pub findings: Vec<Finding>,
 }
 
@@ -58,9 +67,18 @@ pub(super) fn contender(
         "\"air-source\"",
     );
     let kind = kind.map(|(kind,)| kind);
-    let warm = warm_side(around.home, table, kind, around.facts, check, notes);
+    let warm = warm_side(
+        around.home,
+        table,
+        kind,
+        around.facts,
+        around.bills,
+        check,
+        notes,
+    );
     let keeps_gas = check.value(&table.keeps_gas);
     let capital = capital(table, around.energy, check);
+    let shown_year = shown_year(table, check);
     let kind = kind?;
     only_its_own_fields(table, kind, check);
     let heating = match kind {
@@ -95,64 +113,110 @@ pub(super) fn contender(
         notes.used(&defaults::BACKUP_BAND);
     }
     let fuel_signal = gas.filter(|_| burns_gas).map(|gas| gas.signal.clone());
-    let plan = steady(
-        site.outdoor_c.len(),
+    let (machine, mut findings) =
+        made.map_or((None, Vec::new()), |made| (Some(made.label), made.findings));
+    findings.extend(warm.findings);
+    let system = System {
+        label,
+        home: warm.home,
+        heating,
+    };
+    let design = design_point(
+        &system,
         warm.indoor_c,
-        band_k,
-        energy.electricity.signal.clone(),
+        warm.design_outdoor_c,
+        warm.design_load_kw,
+        Memory::default(),
+    );
+    let ability = Ability {
+        output_kw: design.carried_kw(),
+        backup_band_k: band_k,
+    };
+    let electricity = energy.electricity.signal.clone();
+    let plan = following(
+        &warm.pattern,
+        &site.civil,
+        ability,
+        electricity,
         fuel_signal,
     );
-    let (machine, findings) =
-        made.map_or((None, Vec::new()), |made| (Some(made.label), made.findings));
+    let (capital, capital_parts) = capital?;
     Some(Made {
         contender: Contender {
             kind: kind.word(),
             today: around.today,
-            system: System {
-                label,
-                home: warm.home,
-                heating,
-            },
+            system,
             plan,
             electricity: energy.electricity.account.clone(),
             fuel: gas.map(|Supply { account, .. }| account.clone()),
             indoor_c: warm.indoor_c,
             design_outdoor_c: warm.design_outdoor_c,
-            capital: capital?,
+            design_load_kw: warm.design_load_kw,
+            pattern: warm.pattern,
+            ability,
+            capital,
+            capital_parts,
+            shown_year: shown_year?,
+            aged: None,
         },
         machine,
+        rooms: warm.rooms,
+        parts_w_per_k: warm.parts_w_per_k,
         findings,
     })
 }
 
-/// Money for the parts; nothing when it is wrong, nothing inside when it is not given.
-#[allow(
-    clippy::option_option,
-    reason = "outer: could not be read; inner: not given"
-)]
-fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> Option<Option<f64>> {
+/// Money for the whole and for the parts; nothing when it is wrong.
+fn capital(
+    table: &SystemTable,
+    energy: Option<&Energy>,
+    check: &mut Check,
+) -> Option<(Option<f64>, Vec<(String, f64)>)> {
     let Some(leaf) = &table.capital else {
-        return Some(None);
-    };
-    let text = check.value(&table.capital)?;
-    let money = match Money::parse(&text) {
-        Ok(money) => money,
-        Err(problem) => {
-            check.refuse(&leaf.span(), problem.found, problem.allowed, problem.remedy);
-            return None;
-        }
+        return Some((None, Vec::new()));
     };
     let currency = energy?.currency;
-    if money.currency != currency {
-        check.refuse(
-            &leaf.span(),
-            format!("{money}"),
-            format!("an amount in {currency}, as the tariffs are"),
-            "convert it",
-        );
-        return None;
+    let mut amount = |text: &str| -> Option<f64> {
+        let money = match Money::parse(text) {
+            Ok(money) => money,
+            Err(problem) => {
+                check.refuse(&leaf.span(), problem.found, problem.allowed, problem.remedy);
+                return None;
+            }
+        };
+        if money.currency != currency {
+            check.refuse(
+                &leaf.span(),
+                format!("{money}"),
+                format!("an amount in {currency}, as the tariffs are"),
+                "convert it",
+            );
+            return None;
+        }
+        money.amount.to_f64()
+    };
+    match leaf.value() {
+        Ok(Capital::Whole(text)) => Some((Some(amount(text)?), Vec::new())),
+        Ok(Capital::Parts(parts)) => {
+            let read = parts
+                .iter()
+                .map(|(name, text)| amount(text).map(|money| (name.clone(), money)));
+            let parts = read.collect::<Option<Vec<_>>>()?;
+            Some((Some(parts.iter().map(|part| part.1).sum()), parts))
+        }
+        Err(_) => {
+            check.value(&table.capital);
+            None
+        }
     }
-    Some(money.amount.to_f64())
+}
+
+/// Year of a buried loop's life that is shown.
+fn shown_year(table: &SystemTable, check: &mut Check) -> Option<u32> {
+    if table.shown_year.is_none() {
+        return Some(SHOWN_YEAR);
+    }
+    whole_within(check, &table.shown_year, &bounds::LOOP_YEAR).map(|year| year as u32)
 }
 
 fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<Heating> {
@@ -220,75 +284,43 @@ fn heat_pump(
         &bounds::AUXILIARY_KW,
         &defaults::CIRCULATION_PUMP,
     );
+    let mut made = machine(table, kind, around.folder, warm, check, notes);
+    let mut findings = Vec::new();
     let source = match kind {
-        SystemKind::GroundSource => ground(table, around, check, notes).map(Source::Ground),
+        SystemKind::GroundSource => {
+            let machine = made.as_ref().map(|made| &made.machine);
+            ground(
+                &Ground {
+                    table,
+                    around,
+                    machine,
+                },
+                check,
+                notes,
+                &mut findings,
+            )
+        }
         _ => Some(Source::OutdoorAir),
     };
-    let made = machine(table, kind, around.folder, warm, check, notes);
-    let made = made?;
+    if let Some(made) = &mut made {
+        made.findings.append(&mut findings);
+    }
+    let (source, made) = (source?, made?);
+    // The pump of a described loop is computed with it; the machine keeps what its tested points hold.
+    let machine = match &source {
+        Source::Buried(_) | Source::Water(_) => made.machine.without_outside_pump(),
+        Source::OutdoorAir | Source::Ground(_) => made.machine.clone(),
+    };
     Some((
         Heating::HeatPump(Box::new(MachineSystem {
-            machine: made.machine.clone(),
-            source: source?,
+            machine,
+            source,
             backup_kw: backup?.kw(),
             immersion_kw: immersion?.kw(),
             circulation_kw: pump?.kw(),
         })),
         Some(made),
     ))
-}
-
-fn ground(
-    table: &Section<SystemTable>,
-    around: &Surroundings<'_>,
-    check: &mut Check,
-    notes: &mut Notes,
-) -> Option<GroundLoop> {
-    let depth = notes.quantity(
-        check,
-        &table.loop_depth,
-        &bounds::TRENCH_DEPTH_M,
-        &defaults::LOOP_DEPTH,
-    );
-    let diffusivity = notes.quantity(
-        check,
-        &table.soil_diffusivity,
-        &bounds::DIFFUSIVITY_M2_PER_S,
-        &defaults::SOIL_DIFFUSIVITY,
-    );
-    check.required(
-        &table.loop_resistance,
-        &table.span(),
-        "loop_resistance",
-        "\"1.6 K/kW\": a loop whose brine falls 1.6 K below the ground for each kW drawn",
-    );
-    let resistance = check.within(&table.loop_resistance, &bounds::LOOP_K_PER_KW);
-    let outdoor_c = &around.site?.outdoor_c;
-    let Some(wave) = AnnualSwing::fit(outdoor_c) else {
-        check.refuse(
-            &table.span(),
-            format!("{} hours of weather for a ground source", outdoor_c.len()),
-            "a whole year, from which the ground's temperature follows",
-            "give a weather file of at least 8760 hours",
-        );
-        return None;
-    };
-    let (depth_m, diffusivity) = (depth?.m(), diffusivity?.m2_per_s());
-    let undisturbed_c = (0..outdoor_c.len())
-        .map(|hour| undisturbed_c(&wave, depth_m, diffusivity, hour as f64))
-        .collect();
-    notes.add(
-        "undisturbed ground",
-        format!(
-            "mean {:.1} °C, swing {:.1} K at the surface",
-            wave.mean_c, wave.amplitude_k
-        ),
-        "annual wave of the weather file carried down by Kusuda and Achenbach 1965",
-    );
-    Some(GroundLoop {
-        undisturbed_c,
-        resistance_k_per_kw: resistance?.k_per_kw(),
-    })
 }
 
 /// A field's name and its place, where the field is given.
@@ -324,6 +356,14 @@ fn only_its_own_fields(table: &SystemTable, kind: SystemKind, check: &mut Check)
                 given("loop_depth", &table.loop_depth),
                 given("loop_resistance", &table.loop_resistance),
                 given("soil_diffusivity", &table.soil_diffusivity),
+                given("shown_year", &table.shown_year),
+                ("ground", table.ground.as_ref().map(Section::span)),
+                ("brine", table.brine.as_ref().map(Section::span)),
+                ("pipe", table.pipe.as_ref().map(Section::span)),
+                ("borehole", table.borehole.as_ref().map(Section::span)),
+                ("bore", table.bore.first().map(Section::span)),
+                ("trench", table.trench.first().map(Section::span)),
+                ("well", table.well.as_ref().map(Section::span)),
             ],
         ),
         (

@@ -5,10 +5,13 @@ use std::path::{Path, PathBuf};
 
 use super::progress::Progress;
 use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
-use crate::answer::compose;
+use crate::answer::{Estimate, compare_patterns, compose};
 use crate::brief::{Brief, DEFAULTS};
 use crate::chart::ChartError;
-use crate::report::{Drawn, Material, estimate_text, ledger_csv, pictures, report_html};
+use crate::home::Pattern;
+use crate::report::{
+    Drawn, Material, estimate_text, home_text, ledger_csv, patterns_text, pictures, report_html,
+};
 use crate::year::Ledger;
 
 /// Names of the files that are always written.
@@ -39,6 +42,12 @@ pub struct Args {
     /// Say where each assumption is from.
     #[arg(long)]
     assumptions: bool,
+    /// Also say each system's design point, rooms, store and running pattern.
+    #[arg(long)]
+    home: bool,
+    /// Also run every system all day at its set point beside a set-back.
+    #[arg(long)]
+    patterns: bool,
     /// Print every default with its source, and stop.
     #[arg(long)]
     show_defaults: bool,
@@ -76,7 +85,10 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         ledgers.extend(ledger);
     }
     progress.at("break-even");
-    let estimate = compose(&brief.case, &outcomes, &brief.told)?;
+    let mut estimate = compose(&brief.case, &outcomes, &brief.told)?;
+    if args.patterns {
+        estimate.patterns = compare_patterns(&brief.case, &usual_pattern())?;
+    }
     if let Some(folder) = &args.out {
         progress.at("pictures and report");
         let material = Material {
@@ -93,7 +105,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     warn(&estimate.findings);
     match args.format {
         Format::Json => print_json(&estimate),
-        Format::Text => print(&estimate_text(&estimate, args.assumptions)),
+        Format::Text => print(&text(&estimate, args)),
     }
 }
 
@@ -120,6 +132,30 @@ fn files(folder: &Path, material: &Material<'_>) -> Result<Vec<NewFile>, Box<dyn
     let page = report_html(material, &drawn)?;
     files.push(NewFile::new(folder.join(REPORT), page));
     Ok(files)
+}
+
+fn text(estimate: &Estimate, args: &Args) -> String {
+    let mut text = estimate_text(estimate, args.assumptions);
+    if args.home {
+        text += &format!("\n\n{}", home_text(estimate));
+    }
+    if args.patterns {
+        text += &format!("\n\n{}", patterns_text(estimate));
+    }
+    text
+}
+
+/// A set-back for briefs that have none: 7 to 9 and 16 to 23 h on working days, 7 to 23 h at weekends, 20 °C and 16 °C between.
+///
+/// The hours are those of the British standard assessment (SAP 10, table 9) \[from memory\]; the set-back is common practice.
+fn usual_pattern() -> Pattern {
+    let mut pattern = Pattern::continuous(20.0);
+    for hour in 0..24 {
+        let weekday = (7..9).contains(&hour) || (16..23).contains(&hour);
+        pattern.weekday_c[hour] = if weekday { 20.0 } else { 16.0 };
+        pattern.weekend_c[hour] = if (7..23).contains(&hour) { 20.0 } else { 16.0 };
+    }
+    pattern
 }
 
 /// The pictures as PNG, painted side by side: at print resolution that is the longest part of the work.

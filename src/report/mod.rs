@@ -5,7 +5,10 @@
 
 mod blocks;
 mod error;
+mod explain;
 mod facts;
+mod ground;
+mod home;
 mod hours;
 mod ledger;
 mod page;
@@ -15,6 +18,9 @@ mod table;
 mod text;
 
 pub use error::ReportError;
+pub use explain::explain_text;
+pub use ground::ground_text;
+pub use home::{home_text, patterns_text};
 pub use ledger::{ledger_csv, ledger_legend};
 pub use page::report_html;
 pub use pictures::{Drawn, Material, pictures};

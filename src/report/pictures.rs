@@ -8,6 +8,7 @@ use super::hours::{coldest_days_of, coldest_year};
 use crate::answer::Estimate;
 use crate::chart::{self, ChartError, Picture};
 use crate::locale::{DateOrder, Locale, MONTHS};
+use crate::source::Memory;
 use crate::study::{Case, Contender, Outcome, output_range_kw};
 use crate::year::{Flags, Heating, Ledger, Row};
 
@@ -202,11 +203,19 @@ fn demand_and_output(material: &Material<'_>, system: usize) -> Result<Option<Dr
         return Ok(None);
     }
     let low = (coldest.min(contender.design_outdoor_c) - 2.0).floor() as i32;
+    let ground = contender
+        .aged
+        .map_or_else(Memory::default, |aged| aged.memory);
     // Where the machine stands still there is no output to draw a line through.
     let (mut least, mut greatest) = (Vec::new(), Vec::new());
     for outdoor_c in (low..=warmest as i32).map(f64::from) {
-        let (low_kw, high_kw) =
-            output_range_kw(&contender.system, machine, contender.indoor_c, outdoor_c);
+        let (low_kw, high_kw) = output_range_kw(
+            &contender.system,
+            machine,
+            contender.indoor_c,
+            outdoor_c,
+            &ground,
+        );
         if high_kw > 0.0 {
             least.push((outdoor_c, low_kw));
             greatest.push((outdoor_c, high_kw));

@@ -4,7 +4,7 @@ use argmin::core::{CostFunction, Error, Executor, State as _};
 use argmin::solver::brent::BrentRoot;
 
 use crate::heatpump::ColdSide;
-use crate::source::Source;
+use crate::source::Memory;
 use crate::year::{MachineSystem, System};
 
 /// Outdoor temperatures between which a balance point is looked for, °C.
@@ -41,11 +41,28 @@ struct Surplus<'a> {
     machine: &'a MachineSystem,
     indoor_c: f64,
     water_kw: f64,
+    ground: Memory,
+}
+
+/// What a machine's source offers on a cold night of an outdoor temperature (°C), ground and water at their coldest.
+pub(super) fn cold_side(machine: &MachineSystem, outdoor_c: f64, ground: &Memory) -> ColdSide {
+    let offer = machine.source.cold_offer(outdoor_c, ground);
+    ColdSide {
+        open_c: offer.open_c,
+        k_per_kw: offer.k_per_kw,
+        relative_humidity: None,
+    }
 }
 
 impl Surplus<'_> {
     fn at(&self, outdoor_c: f64) -> f64 {
-        let (_, greatest_kw) = output_range_kw(self.system, self.machine, self.indoor_c, outdoor_c);
+        let (_, greatest_kw) = output_range_kw(
+            self.system,
+            self.machine,
+            self.indoor_c,
+            outdoor_c,
+            &self.ground,
+        );
         greatest_kw - load_kw(self.system, self.indoor_c, outdoor_c) - self.water_kw
     }
 }
@@ -57,28 +74,18 @@ fn load_kw(system: &System, indoor_c: f64, outdoor_c: f64) -> f64 {
 }
 
 /// Least output without going on and off and greatest output, kW, at an outdoor temperature and the flow temperature that
-/// the emitters need for the steady loss there.
+/// the emitters need for the steady loss there; ground and water at their coldest.
 pub fn output_range_kw(
     system: &System,
     machine: &MachineSystem,
     indoor_c: f64,
     outdoor_c: f64,
+    ground: &Memory,
 ) -> (f64, f64) {
+    let emitters = &system.home.emitters;
     let load_kw = load_kw(system, indoor_c, outdoor_c);
-    let cold = match &machine.source {
-        Source::OutdoorAir => ColdSide {
-            open_c: outdoor_c,
-            k_per_kw: 0.0,
-            relative_humidity: None,
-        },
-        // A cold night meets the ground at its coldest.
-        Source::Ground(ground) => ColdSide {
-            open_c: machine.source.lowest_c(&[]),
-            k_per_kw: ground.resistance_k_per_kw,
-            relative_humidity: None,
-        },
-    };
-    let flow_c = system.home.emitters.at_load(load_kw, indoor_c).flow_c;
+    let cold = cold_side(machine, outdoor_c, ground);
+    let flow_c = emitters.at_load(load_kw, indoor_c).flow_c + emitters.header_k();
     let greatest_kw = machine.machine.greatest_output_kw(&cold, flow_c);
     let least_kw = machine.machine.least_output_kw(&cold, flow_c);
     (least_kw.min(greatest_kw), greatest_kw)
@@ -94,7 +101,8 @@ impl CostFunction for Surplus<'_> {
 }
 
 /// The balance point of a machine: the load is the steady loss from the set point without gains, as for the design heat
-/// load; `with_hot_water` adds the mean power of the day's hot water.
+/// load; `with_hot_water` adds the mean power of the day's hot water; `ground` is what the ground
+/// remembers.
 ///
 /// Nothing when the solver does not converge.
 pub fn balance_point(
@@ -102,12 +110,13 @@ pub fn balance_point(
     machine: &MachineSystem,
     indoor_c: f64,
     with_hot_water: bool,
+    ground: Memory,
 ) -> Option<BalancePoint> {
     let daily_kwh = system
         .home
         .hot_water
         .as_ref()
-        .map_or(0.0, |water| water.daily_kwh);
+        .map_or(0.0, |water| water.mean_daily_kwh());
     let water_kw = if with_hot_water {
         daily_kwh / 24.0
     } else {
@@ -118,6 +127,7 @@ pub fn balance_point(
         machine,
         indoor_c,
         water_kw,
+        ground,
     };
     let (low_c, high_c) = RANGE_C;
     if surplus.at(low_c) >= 0.0 {

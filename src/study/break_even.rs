@@ -7,7 +7,6 @@ use super::case::Case;
 use super::lever::Lever;
 use super::outcome::{Outcome, price};
 use crate::problem::Problems;
-use crate::tariff::Reading;
 
 /// The range of a lever is looked through in this many steps, so that several crossings are all found.
 const STEPS: usize = 8;
@@ -57,19 +56,13 @@ impl Dearer<'_> {
         self.lever.apply(value, &mut pair, 1)?;
         if self.lever.moves_only_prices() {
             let cost = |contender: usize, outcome: &Outcome| {
-                let mut electricity = outcome.electricity.clone();
-                let mut fuel = outcome.fuel.clone();
-                // Where prices are hourly, the reading holds their sum, which moves with them.
-                match self.lever {
-                    Lever::ElectricityRate => scale(&mut electricity, value),
-                    _ => fuel.iter_mut().for_each(|reading| scale(reading, value)),
-                }
+                let fuel = outcome.fuel.as_ref();
                 let years = &pair.site.years;
                 price(
                     &pair.contenders[contender],
                     years,
-                    &electricity,
-                    fuel.as_ref(),
+                    &outcome.electricity,
+                    fuel,
                 )
             };
             Ok(cost(1, &self.outcomes[self.choice])?.total - cost(0, &self.outcomes[0])?.total)
@@ -78,13 +71,6 @@ impl Dearer<'_> {
             Ok(outcomes[1].costs.total - outcomes[0].costs.total)
         }
     }
-}
-
-fn scale(reading: &mut Reading, factor: f64) {
-    reading
-        .hourly_cost
-        .iter_mut()
-        .for_each(|cost| *cost *= factor);
 }
 
 impl CostFunction for &Dearer<'_> {

@@ -96,12 +96,14 @@ impl Lever {
                 for contender in &mut case.contenders {
                     let fabric = &mut contender.system.home.fabric;
                     *fabric = fabric.with_heat_loss(fabric.heat_loss_w_per_k() * value);
+                    contender.moved();
                 }
             }
             Self::FlowTemperature => {
                 if let Some(contender) = case.contenders.get_mut(choice) {
                     let emitters = &mut contender.system.home.emitters;
                     *emitters = emitters.with_design_flow(value, contender.indoor_c);
+                    contender.moved();
                 }
             }
             Self::FieldFactor => {
@@ -118,7 +120,7 @@ impl Lever {
 
 /// The same account with every price of a kilowatt-hour multiplied.
 ///
-/// Buckets do not depend on rates, so the meter stays; hourly prices are the exception, and their sums scale with them.
+/// Buckets do not depend on rates and hourly sums are kept before scaling, so meter and readings stay.
 fn scaled(account: &Account, factor: f64) -> Account {
     Account {
         tariff: Arc::new(account.tariff.with_energy_times(factor)),

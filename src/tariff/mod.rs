@@ -125,7 +125,7 @@ impl Tariff {
         Meter::new(self, civil)
     }
 
-    /// The same tariff with every price of a kilowatt-hour multiplied; standing and demand charges stay.
+    /// The same tariff with every price of a kilowatt-hour bought multiplied; standing, demand and export stay.
     ///
     /// Meters and readings made under the one hold for the other: buckets do not depend on rates.
     pub fn with_energy_times(&self, factor: f64) -> Self {

@@ -75,6 +75,10 @@ measures! {
     /// A volume of water.
     WaterVolume, "a volume of water", l, from_l, "120 L",
         ["L" = 1.0; "l" = 1.0; "litres" = 1.0; "m³" = 1000.0; "US gal" = 3.785_411_784; "UK gal" = 4.546_09;];
+    /// A volume of air.
+    AirVolume, "a volume of air", m3, from_m3, "240 m³", ["m³" = 1.0; "ft³" = M_PER_FT * M_PER_FT * M_PER_FT;];
+    /// Air exchanged in an hour, as a multiple of the volume.
+    AirChangeRate, "an air change rate", per_h, from_per_h, "0.5 1/h", ["1/h" = 1.0; "/h" = 1.0; "ach" = 1.0;];
     /// A span of time.
     Duration, "a span of time", h, from_h, "40 h",
         ["h" = 1.0; "min" = 1.0 / 60.0; "days" = 24.0; "d" = 24.0;];
@@ -100,6 +104,12 @@ measures! {
     /// Mass flow.
     MassFlow, "a mass flow", kg_per_s, from_kg_per_s, "0.02 kg/s",
         ["kg/s" = 1.0; "kg/h" = 1.0 / 3600.0; "g/s" = 0.001;];
+    /// A flow of water or brine.
+    VolumeFlow, "a flow", l_per_s, from_l_per_s, "0.4 L/s",
+        ["L/s" = 1.0; "L/min" = 1.0 / 60.0; "L/h" = 1.0 / 3600.0; "m³/h" = 1.0 / 3.6; "US gpm" = 3.785_411_784 / 60.0;];
+    /// Change of temperature with depth.
+    TemperatureGradient, "a temperature gradient", k_per_m, from_k_per_m, "30 K/km",
+        ["K/m" = 1.0; "K/km" = 0.001;];
     /// Carbon dioxide equivalent per kilowatt-hour.
     CarbonFactor, "a carbon factor", kg_per_kwh, from_kg_per_kwh, "0.183 kg/kWh",
         ["kg/kWh" = 1.0; "kg CO2e/kWh" = 1.0; "g/kWh" = 0.001; "g CO2e/kWh" = 0.001;];
@@ -170,6 +180,8 @@ mod tests {
         check::<BoreholeResistance>();
         check::<Current>();
         check::<MassFlow>();
+        check::<VolumeFlow>();
+        check::<TemperatureGradient>();
         check::<CarbonFactor>();
     }
 }

@@ -4,8 +4,8 @@ use std::sync::Arc;
 
 use chrono::DateTime;
 
-use super::clock::Instants;
-use super::order::{Times, minutes};
+use super::clock::{ASIDE, Instants};
+use super::order::{Times, minutes, phase};
 use super::rows::Rows;
 use super::values::Values;
 use super::words::count;
@@ -91,25 +91,26 @@ pub(super) fn local(zone: Zone, instant_s: i64) -> String {
     }
 }
 
+/// The columns of a file on hours in a row.
+struct Placed {
+    start_s: i64,
+    values: Values,
+    line: Vec<u32>,
+    duplicate_hours: usize,
+}
+
 /// Puts the rows of a file on hours.
 ///
 /// # Errors
 /// Readings that are too far apart, or stamps that are spread over far more time than they can cover.
 pub(super) fn hours(
     place: &Place,
-    rows: &Rows,
-    mut values: Values,
+    rows: Rows,
+    values: Values,
     instants: Instants,
     findings: &mut Vec<Finding>,
 ) -> Result<Hours, Problem> {
-    let Instants {
-        begin_s,
-        step_s,
-        zone,
-        zone_known,
-        stitched,
-        called_typical,
-    } = instants;
+    let step_s = instants.step_s;
     if step_s > COARSEST_STEP_S {
         return Err(Problem::new(
             place.clone(),
@@ -121,80 +122,42 @@ pub(super) fn hours(
             "use an hourly file",
         ));
     }
-    let times = Times {
-        place,
-        line: &rows.line,
-        begin_s: &begin_s,
-        zone,
-    };
-    let order = times.sorted(findings);
-    let (Some(&first), Some(&last)) = (order.first(), order.last()) else {
-        return Err(Problem::new(
-            place.clone(),
-            "no row has a usable time",
-            "hourly readings",
-            "",
-        ));
-    };
-    let shift = times.shift_to_hours(&order, step_s, findings) + times.phase(first);
-    let hour_of = |row: u32| (times.at(row) + shift).div_euclid(HOUR_S);
-    let base = hour_of(first);
-    let number = hour_of(last) - base + 1;
-    if number > SPARSEST * i64::try_from(order.len()).unwrap_or(i64::MAX) + 240 {
-        return Err(Problem::new(
-            place.clone(),
-            format!(
-                "{} are spread from {} to {}",
-                count(order.len(), "reading"),
-                times.text(first),
-                times.text(last)
-            ),
-            "readings in a row",
-            "is the order of day and month right? is a stamp mistyped?",
-        ));
-    }
-    let number = usize::try_from(number).unwrap_or(0);
-    let (order, doubled) = times.unique(order, &values.outdoor_c, findings);
-    let hour: Vec<u32> = order
-        .iter()
-        .map(|&row| u32::try_from(hour_of(row) - base).unwrap_or(0))
-        .collect();
-    let mut duplicates: Vec<i64> = doubled.into_iter().map(hour_of).collect();
-    duplicates.dedup();
-    let expected = if step_s < HOUR_S {
-        HOUR_S as f64 / step_s as f64
+    let placed = if is_whole(&instants) {
+        Placed {
+            start_s: instants.begin_s.first().copied().unwrap_or(0),
+            values,
+            line: rows.line,
+            duplicate_hours: 0,
+        }
     } else {
-        1.0
+        place_rows(place, &rows, &values, &instants, findings)?
     };
-    let fill = |values: &mut Vec<f64>| averaged(&order, &hour, values, number, expected);
+    let Placed {
+        start_s,
+        values,
+        line,
+        duplicate_hours,
+    } = placed;
     let mut hours = Hours {
         files: place
             .file
             .iter()
             .map(|name| (0, Arc::clone(name)))
             .collect(),
-        start_s: base * HOUR_S - times.phase(first),
-        outdoor_c: fill(&mut values.outdoor_c),
-        humidity: values.humidity.as_mut().map(fill),
-        dew_point_c: values.dew_point_c.as_mut().map(fill),
-        global_w_per_m2: values.global_w_per_m2.as_mut().map(fill),
-        wind_m_per_s: values.wind_m_per_s.as_mut().map(fill),
-        line: vec![0; number],
-        zone,
-        zone_known,
-        stitched,
-        called_typical,
-        duplicate_hours: duplicates.len(),
+        start_s,
+        outdoor_c: values.outdoor_c,
+        humidity: values.humidity,
+        dew_point_c: values.dew_point_c,
+        global_w_per_m2: values.global_w_per_m2,
+        wind_m_per_s: values.wind_m_per_s,
+        line,
+        zone: instants.zone,
+        zone_known: instants.zone_known,
+        stitched: instants.stitched,
+        called_typical: instants.called_typical,
+        duplicate_hours,
         joined_hours: 0,
     };
-    for (&row, &hour) in order.iter().zip(&hour).rev() {
-        if let (Some(line), Some(&of_row)) = (
-            hours.line.get_mut(hour as usize),
-            rows.line.get(row as usize),
-        ) {
-            *line = of_row;
-        }
-    }
     if step_s < HOUR_S {
         findings.push(
             Finding::new(
@@ -235,8 +198,105 @@ pub(super) fn hours(
     Ok(hours)
 }
 
+/// Whether the rows are hours in a row already, each on the hour, as in most files.
+fn is_whole(instants: &Instants) -> bool {
+    let begins = &instants.begin_s;
+    let on_the_hour = begins.first().is_some_and(|&first| {
+        first != ASIDE && (first + phase(instants.zone, first)).rem_euclid(HOUR_S) == 0
+    });
+    on_the_hour
+        && begins
+            .windows(2)
+            .all(|w| w[0] != ASIDE && w[1] == w[0] + HOUR_S)
+}
+
+/// Sorts the rows, drops what is there twice, and averages what falls into one hour.
+fn place_rows(
+    place: &Place,
+    rows: &Rows,
+    values: &Values,
+    instants: &Instants,
+    findings: &mut Vec<Finding>,
+) -> Result<Placed, Problem> {
+    let step_s = instants.step_s;
+    let times = Times {
+        place,
+        line: &rows.line,
+        begin_s: &instants.begin_s,
+        zone: instants.zone,
+    };
+    let order = times.sorted(findings);
+    let (Some(&first), Some(&last)) = (order.first(), order.last()) else {
+        return Err(Problem::new(
+            place.clone(),
+            "no row has a usable time",
+            "hourly readings",
+            "",
+        ));
+    };
+    let shift = times.shift_to_hours(&order, step_s, findings) + times.phase(first);
+    let hour_of = |row: u32| (times.at(row) + shift).div_euclid(HOUR_S);
+    let base = hour_of(first);
+    let number = hour_of(last) - base + 1;
+    if number > SPARSEST * i64::try_from(order.len()).unwrap_or(i64::MAX) + 240 {
+        return Err(Problem::new(
+            times.place_of(widest(&order, &times)),
+            format!(
+                "{} are spread from {} to {}",
+                count(order.len(), "reading"),
+                times.text(first),
+                times.text(last)
+            ),
+            "readings in a row",
+            "is the order of day and month right? is a stamp mistyped?",
+        ));
+    }
+    let number = usize::try_from(number).unwrap_or(0);
+    let (order, doubled) = times.unique(order, &values.outdoor_c, findings);
+    let hour: Vec<u32> = order
+        .iter()
+        .map(|&row| u32::try_from(hour_of(row) - base).unwrap_or(0))
+        .collect();
+    let mut duplicates: Vec<i64> = doubled.into_iter().map(hour_of).collect();
+    duplicates.dedup();
+    let expected = if step_s < HOUR_S {
+        HOUR_S as f64 / step_s as f64
+    } else {
+        1.0
+    };
+    let mean = |values: &Vec<f64>| averaged(&order, &hour, values, number, expected);
+    let mut line = vec![0; number];
+    for (&row, &hour) in order.iter().zip(&hour).rev() {
+        if let (Some(line), Some(&of_row)) =
+            (line.get_mut(hour as usize), rows.line.get(row as usize))
+        {
+            *line = of_row;
+        }
+    }
+    Ok(Placed {
+        start_s: base * HOUR_S - times.phase(first),
+        values: Values {
+            outdoor_c: mean(&values.outdoor_c),
+            humidity: values.humidity.as_ref().map(mean),
+            dew_point_c: values.dew_point_c.as_ref().map(mean),
+            global_w_per_m2: values.global_w_per_m2.as_ref().map(mean),
+            wind_m_per_s: values.wind_m_per_s.as_ref().map(mean),
+        },
+        line,
+        duplicate_hours: duplicates.len(),
+    })
+}
+
 fn present(values: &[f64]) -> usize {
     values.iter().filter(|value| !value.is_nan()).count()
+}
+
+/// The row after the widest hole.
+fn widest(order: &[u32], times: &Times) -> u32 {
+    let steps = order
+        .windows(2)
+        .map(|w| (times.at(w[1]) - times.at(w[0]), w[1]));
+    steps.max().map_or(0, |(_, row)| row)
 }
 
 /// Means by hour; the rows are in order of time.

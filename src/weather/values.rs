@@ -17,8 +17,8 @@ const BEARABLE_COUNT: usize = 3;
 const HOTTEST_MEAN_C: f64 = 32.0;
 /// Readings a little below nothing, as pyranometers give at night, W/m².
 const NIGHT_OFFSET_W_PER_M2: f64 = -20.0;
-/// Relative humidity up to this is saturation read by a sensor that is slightly off, %.
-const SATURATED_PERCENT: f64 = 105.0;
+/// Relative humidity up to this is saturation read by a sensor that is slightly off.
+const SATURATED: f64 = 1.05;
 /// Hourly mean wind.
 const WIND_M_PER_S: Bound = Bound {
     label: "wind speed",
@@ -26,7 +26,7 @@ const WIND_M_PER_S: Bound = Bound {
     high: 75.0,
     unit: "m/s",
 };
-/// Pressure unit factors: kJ and the like per hour as mean W.
+/// Watt-hours in a kilojoule: an hour's kJ/m² as mean W/m².
 const WH_PER_KJ: f64 = 1.0 / 3.6;
 
 /// The readings of a file in °C, shares, W/m² and m/s. Missing is `NaN`.
@@ -262,8 +262,8 @@ fn temperature(
             Finding::new(
                 Severity::Note,
                 format!(
-                    "{} such as {reading} mark a missing temperature",
-                    count(marked, "number")
+                    "{reading} stands for a missing temperature in {}",
+                    count(marked, "row")
                 ),
                 "taken as missing",
             )
@@ -298,16 +298,16 @@ fn humidity(
     column: &ValueColumn,
     note: &mut impl FnMut(String, &str),
 ) -> Vec<f64> {
-    let greatest = values
-        .iter()
-        .copied()
-        .filter(|x| x.is_finite() && *x <= SATURATED_PERCENT)
-        .fold(0.0, f64::max);
     let fraction = match column.unit.as_str() {
         "%" | "percent" | "pct" => false,
         "-" | "1" | "0-1" | "0..1" | "0–1" | "fraction" => true,
         _ => {
-            let fraction = greatest <= 1.05;
+            let greatest = values
+                .iter()
+                .copied()
+                .filter(|x| x.is_finite() && *x <= SATURATED * 100.0)
+                .fold(0.0, f64::max);
+            let fraction = greatest <= SATURATED;
             if fraction {
                 note(
                     format!("no unit is stated for relative humidity up to {greatest}"),
@@ -319,10 +319,10 @@ fn humidity(
     };
     let mut odd = 0;
     for value in &mut values {
-        let percent = if fraction { *value * 100.0 } else { *value };
-        *value = if (0.0..=100.0).contains(&percent) {
-            percent / 100.0
-        } else if percent > 100.0 && percent <= SATURATED_PERCENT {
+        let share = if fraction { *value } else { *value / 100.0 };
+        *value = if (0.0..=1.0).contains(&share) {
+            share
+        } else if share > 1.0 && share <= SATURATED {
             1.0
         } else {
             odd += usize::from(!value.is_nan());
