@@ -11,10 +11,13 @@ mod explain;
 mod failure;
 mod files;
 mod ground;
+mod init;
 mod machine;
+mod manual;
 mod output;
 mod progress;
 mod rating;
+mod schema;
 mod tariff;
 
 use std::process::ExitCode;
@@ -48,6 +51,10 @@ enum Command {
     Rating(rating::Args),
     Tariff(tariff::Args),
     Ground(ground::Args),
+    Init(init::Args),
+    Schema(schema::Args),
+    Completions(manual::Completions),
+    Manual(manual::Manual),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -69,5 +76,9 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
         Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
         Command::Ground(args) => ground::run(args),
+        Command::Init(args) => init::run(args),
+        Command::Schema(args) => schema::run(args),
+        Command::Completions(args) => manual::completions(args),
+        Command::Manual(args) => manual::manual(args),
     }
 }
