@@ -77,6 +77,19 @@ fn heat_balances_over_the_life() {
     );
 }
 
+/// Lifetime cost takes each year's own: a loop in fresh ground is cheapest in its first year, air and gas cost the same in all.
+#[test]
+fn every_year_of_a_loop_has_its_own_cost() {
+    let case = case();
+    let bore = case.yearly_costs(named(&case, BORE), 4).unwrap();
+    assert!(bore.windows(2).all(|pair| pair[1] > pair[0]), "{bore:?}");
+    let air = case.yearly_costs(named(&case, "Air source"), 4).unwrap();
+    assert!(
+        air.len() == 4 && air.iter().all(|cost| *cost == air[0]),
+        "{air:?}"
+    );
+}
+
 /// Two parts of a year with the state carried over are the year, the ground's memory included.
 #[test]
 fn a_run_can_be_resumed() {

@@ -218,8 +218,8 @@ fn a_loop_is_not_judged_by_its_first_year() {
         means.push(sum / 8760.0);
     }
     let fall_k = means[0] - means[24];
-    // Printed to two figures.
-    assert!((fall_k - 1.5).abs() < 0.06, "{fall_k}");
+    // "About": a tenth either way; depth and radius behind the figure are not stated.
+    assert!((fall_k / 1.5 - 1.0).abs() < 0.1, "{fall_k}");
 }
 
 /// The closed first-order formula is pygfunction's first-order multipole solution, which iterates to about 1e-8; the tenth order

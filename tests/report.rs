@@ -44,6 +44,13 @@ fn run(brief: Option<&str>) -> (tempfile::TempDir, String, Value) {
     (folder, page, result)
 }
 
+/// The demonstration, run once for all that look at it.
+fn demonstration() -> &'static (tempfile::TempDir, String, Value) {
+    static RUN: std::sync::OnceLock<(tempfile::TempDir, String, Value)> =
+        std::sync::OnceLock::new();
+    RUN.get_or_init(|| run(None))
+}
+
 /// The body as XML: it holds no element that HTML leaves open but the one taken out here.
 fn body(page: &str) -> String {
     let from = page.find("<body>").unwrap();
@@ -165,9 +172,9 @@ fn check_page(page: &str) {
 /// Every figure of the tables of systems and money is that of result.json, rounded.
 #[test]
 fn figures_equal_the_result() {
-    let (_folder, page, result) = run(None);
-    check_page(&page);
-    let body = body(&page);
+    let (_folder, page, result) = demonstration();
+    check_page(page);
+    let body = body(page);
     let document = Document::parse(&body).unwrap();
     let systems = result["systems"].as_array().unwrap();
     let label = |cell: &str| cell.replace(" (today)", "");
@@ -235,8 +242,8 @@ fn figures_equal_the_result() {
 /// The months as printed add up to the year as printed, and each is that of result.json but for its rounding.
 #[test]
 fn months_add_up() {
-    let (_folder, page, result) = run(None);
-    let body = body(&page);
+    let (_folder, page, result) = demonstration();
+    let body = body(page);
     let document = Document::parse(&body).unwrap();
     let tables: Vec<_> = named(section(&document, "meter"), "table").collect();
     let systems = result["systems"].as_array().unwrap();
@@ -453,7 +460,7 @@ fn the_folder_is_looked_at_first() {
 /// The checksums are those of the files, and every file of the brief is there.
 #[test]
 fn inputs_are_told_with_their_checksums() {
-    let (_folder, page, result) = run(None);
+    let (_folder, page, result) = demonstration();
     let inputs = result["inputs"].as_array().unwrap();
     let files: Vec<_> = inputs.iter().map(|i| i["file"].as_str().unwrap()).collect();
     for file in [
@@ -468,6 +475,6 @@ fn inputs_are_told_with_their_checksums() {
         let told = inputs.iter().find(|i| i["file"] == file).unwrap();
         assert_eq!(told["bytes"].as_u64(), Some(bytes as u64));
         let sum = told["sha256"].as_str().unwrap();
-        assert!(body(&page).contains(sum));
+        assert!(body(page).contains(sum));
     }
 }

@@ -10,6 +10,7 @@ mod home;
 pub mod machine;
 pub mod rating;
 pub mod tariff;
+pub mod weather;
 
 pub use compose::{BillsTold, Told, compare_patterns, compose};
 pub use estimate::{

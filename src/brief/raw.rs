@@ -62,7 +62,7 @@ impl Word for DateOrder {
 
 impl Word for Paper {
     const NAME: &'static str = "a size of paper";
-    const WORDS: &'static [(&'static str, Self)] = &[("A4", Self::A4), ("letter", Self::Letter)];
+    const WORDS: &'static [(&'static str, Self)] = &[("a4", Self::A4), ("letter", Self::Letter)];
 }
 
 /// The home.

@@ -140,7 +140,7 @@ pub(super) fn contender(
         electricity,
         fuel_signal,
     );
-    let (capital, capital_parts) = capital?;
+    let capital = capital?;
     Some(Made {
         contender: Contender {
             kind: kind.word(),
@@ -154,8 +154,8 @@ pub(super) fn contender(
             design_load_kw: warm.design_load_kw,
             pattern: warm.pattern,
             ability,
-            capital,
-            capital_parts,
+            capital: capital.whole,
+            capital_parts: capital.parts,
             shown_year: shown_year?,
             aged: None,
         },
@@ -166,14 +166,19 @@ pub(super) fn contender(
     })
 }
 
+/// What a system costs to put in.
+#[derive(Debug, Default)]
+struct PutIn {
+    /// Everything; nothing when it is not given.
+    whole: Option<f64>,
+    /// Part by part, where it is given so.
+    parts: Vec<(String, f64)>,
+}
+
 /// Money for the whole and for the parts; nothing when it is wrong.
-fn capital(
-    table: &SystemTable,
-    energy: Option<&Energy>,
-    check: &mut Check,
-) -> Option<(Option<f64>, Vec<(String, f64)>)> {
+fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> Option<PutIn> {
     let Some(leaf) = &table.capital else {
-        return Some((None, Vec::new()));
+        return Some(PutIn::default());
     };
     let currency = energy?.currency;
     let mut amount = |text: &str| -> Option<f64> {
@@ -196,13 +201,17 @@ fn capital(
         money.amount.to_f64()
     };
     match leaf.value() {
-        Ok(Capital::Whole(text)) => Some((Some(amount(text)?), Vec::new())),
+        Ok(Capital::Whole(text)) => Some(PutIn {
+            whole: Some(amount(text)?),
+            parts: Vec::new(),
+        }),
         Ok(Capital::Parts(parts)) => {
             let read = parts
                 .iter()
                 .map(|(name, text)| amount(text).map(|money| (name.clone(), money)));
             let parts = read.collect::<Option<Vec<_>>>()?;
-            Some((Some(parts.iter().map(|part| part.1).sum()), parts))
+            let whole = Some(parts.iter().map(|part| part.1).sum());
+            Some(PutIn { whole, parts })
         }
         Err(_) => {
             check.value(&table.capital);

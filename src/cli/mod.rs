@@ -19,6 +19,7 @@ mod progress;
 mod rating;
 mod schema;
 mod tariff;
+mod weather;
 
 use std::process::ExitCode;
 
@@ -55,6 +56,7 @@ enum Command {
     Schema(schema::Args),
     Completions(manual::Completions),
     Manual(manual::Manual),
+    Weather(weather::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -80,5 +82,6 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
         Command::Schema(args) => schema::run(args),
         Command::Completions(args) => manual::completions(args),
         Command::Manual(args) => manual::manual(args),
+        Command::Weather(args) => weather::run(args),
     }
 }

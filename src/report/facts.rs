@@ -187,6 +187,15 @@ fn system(material: &Material<'_>, i: usize) -> Value {
         "heat_kwh",
         json!(answer.space_heat_kwh + answer.hot_water_kwh),
     );
+    put("design_flow_c", json!(answer.design.heater_flow_c));
+    put("design_output_kw", json!(answer.design.output_kw));
+    put("water_l_per_min", json!(answer.design.water_l_per_min));
+    if let Some(store) = &answer.store {
+        put("usable_l", json!(store.usable_l));
+        if let Some(hours) = store.reheat_hours {
+            put("reheat_hours", json!(hours));
+        }
+    }
     put("months", months(&answer.monthly));
     if let Some(levers) = estimate.break_even.get(&answer.label) {
         let conditions: Vec<_> = levers.iter().flat_map(|lever| &lever.conditions).collect();

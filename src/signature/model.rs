@@ -132,9 +132,13 @@ mod tests {
     fn a_matrix_times_its_inverse_is_one() {
         let m = [[4.0, 1.0, 0.5], [1.0, 3.0, 0.2], [0.5, 0.2, 2.0]];
         let inverse = inverse(&m).unwrap();
-        for r in 0..3 {
+        for (r, row) in m.iter().enumerate() {
             for c in 0..3 {
-                let product: f64 = (0..3).map(|k| m[r][k] * inverse[k][c]).sum();
+                let product: f64 = row
+                    .iter()
+                    .zip(&inverse)
+                    .map(|(a, column)| a * column[c])
+                    .sum();
                 assert!((product - f64::from(u8::from(r == c))).abs() < 1e-12);
             }
         }

@@ -19,9 +19,9 @@ pub(super) const HORIZON_H: f64 = 60.0 * 8766.0;
 const CURVE_POINTS: usize = 300;
 /// Singular values below this share of the greatest carry no more than rounding.
 const RANK_TOLERANCE: f64 = 1e-8;
-/// Greatest error of the sum against the response that is accepted, as a share of the response after sixty years. One bore
-/// reaches 3e-5, trenches 1e-3.
-const FIT_TOLERANCE: f64 = 4e-3;
+/// Greatest error of the sum against the response that is accepted, as a share of the response after sixty years. One bore reaches
+/// 2e-5, the trenches of the brief 2e-4.
+const FIT_TOLERANCE: f64 = 1e-3;
 
 /// What past draws have left in the ground: the mean draw of about the last τ hours for each time constant, kW.
 #[derive(Debug, Clone, Copy, PartialEq)]

@@ -115,8 +115,41 @@ impl Case {
         &self,
         contender: &Contender,
         ground: Memory,
-        mut ledger: Option<&mut Ledger>,
+        ledger: Option<&mut Ledger>,
     ) -> Result<Outcome, Problems> {
+        Ok(self.run_through(contender, ground, ledger)?.0)
+    }
+
+    /// Cost of each year of a system's life from fresh ground, the weather's years in their order again and again: a buried loop costs
+    /// more to run year after year, everything else repeats itself.
+    ///
+    /// # Errors
+    /// When a bill cannot be made.
+    pub fn yearly_costs(&self, contender: &Contender, years: usize) -> Result<Vec<f64>, Problems> {
+        let mut costs = Vec::with_capacity(years + self.site.years.len());
+        let mut ground = Memory::default();
+        for _ in 0..years {
+            if costs.len() >= years {
+                break;
+            }
+            let (outcome, after) = self.run_through(contender, ground, None)?;
+            costs.extend(outcome.costs.by_year);
+            if contender.remembering().is_none() {
+                costs = costs.iter().copied().cycle().take(years).collect();
+            }
+            ground = after;
+        }
+        costs.truncate(years);
+        Ok(costs)
+    }
+
+    /// Runs one system through every year; gives what the ground remembers at the end beside the outcome.
+    fn run_through(
+        &self,
+        contender: &Contender,
+        ground: Memory,
+        mut ledger: Option<&mut Ledger>,
+    ) -> Result<(Outcome, Memory), Problems> {
         let site = &*self.site;
         let (system, plan) = (&contender.system, &contender.plan);
         let mut state = State {
@@ -138,12 +171,13 @@ impl Case {
             electricity, fuel, ..
         } = metered;
         let costs = price(contender, &site.years, &electricity, fuel.as_ref())?;
-        Ok(Outcome {
+        let outcome = Outcome {
             years,
             electricity,
             fuel,
             costs,
-        })
+        };
+        Ok((outcome, state.ground))
     }
 }
 

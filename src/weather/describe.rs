@@ -268,8 +268,8 @@ fn coldest_days_of(
     })
 }
 
-/// Warns of weather that smooths the cold away: a typical year, or the average of many.
-fn unfit_for_peak_load(weather: &Weather) -> Option<Finding> {
+/// Warns of weather that smooths the cold away and must not judge peak load: a typical year, or the average of many.
+pub fn unfit_for_peak_load(weather: &Weather) -> Option<Finding> {
     let (what, done) = if let Some(change) = day_to_day_k(weather).filter(|&k| k < SMOOTH_K) {
         (
             format!(

@@ -293,7 +293,10 @@ fn heat_pump_hour<P: Probe>(
         row.circulation_kwh = system.circulation_kw * hours_left;
     }
     let idle = system.machine.idle();
-    let at_rest_kw = if row.running_hours > 0.0 || rooms.wanted_kw > 0.0 {
+    // The cycling coefficient of EN 14825 already holds what a cycling machine takes while it stands.
+    let at_rest_kw = if row.flags.has(Flags::CYCLING) {
+        0.0
+    } else if row.running_hours > 0.0 || rooms.wanted_kw > 0.0 {
         idle.thermostat_off_kw
     } else {
         idle.standby_kw + idle.crankcase_kw

@@ -2,7 +2,7 @@
 
 use super::super::defaults;
 use super::super::notes::Notes;
-use super::circuit::{brine, flow_kg_per_s, pipe, pump};
+use super::circuit::{brine, flow_kg_per_s, given_flow, pipe, pump};
 use super::layout::{bores, filling, legs_fit, trenches};
 use super::{Ground, wave, whole_within};
 use crate::bounds;
@@ -50,7 +50,10 @@ pub(super) fn buried(
         _ => Some(0.0),
     };
     let brine = brine(ground, check, notes, findings);
-    let flow_kg_per_s = brine.and_then(|brine| flow_kg_per_s(&brine, ground, check, notes));
+    let flow = given_flow(ground, check);
+    let flow_kg_per_s = brine
+        .zip(flow)
+        .and_then(|(brine, flow)| flow_kg_per_s(&brine, flow, ground, notes));
     let pump = pump(ground, check, notes);
     let design = LoopDesign {
         layout: layout?,

@@ -116,19 +116,30 @@ pub(super) fn brine(
     Some(brine)
 }
 
-/// Flow of the brine: as given, or such that it cools by the spread of the rating point at the machine's rated output.
+/// Flow that the brief gives, L/s: nothing when it is wrong, nothing inside when it is not given.
+#[allow(
+    clippy::option_option,
+    reason = "outer: could not be read; inner: not given"
+)]
+pub(super) fn given_flow(ground: &Ground<'_>, check: &mut Check) -> Option<Option<f64>> {
+    match ground.table.brine.as_deref() {
+        Some(table) if table.flow.is_some() => check
+            .within(&table.flow, &bounds::SOURCE_FLOW_L_PER_S)
+            .map(|flow| Some(flow.l_per_s())),
+        _ => Some(None),
+    }
+}
+
+/// Flow of the brine, kg/s: as given (L/s), or such that it cools by the spread of the rating point at the machine's rated output.
 pub(super) fn flow_kg_per_s(
     brine: &Brine,
+    given_l_per_s: Option<f64>,
     ground: &Ground<'_>,
-    check: &mut Check,
     notes: &mut Notes,
 ) -> Option<f64> {
     let properties = brine.at(BRINE_C);
-    if let Some(table) = &ground.table.brine
-        && table.flow.is_some()
-    {
-        let flow = check.within(&table.flow, &bounds::SOURCE_FLOW_L_PER_S)?;
-        return Some(flow.l_per_s() * properties.density_kg_per_m3 / 1000.0);
+    if let Some(flow) = given_l_per_s {
+        return Some(flow * properties.density_kg_per_m3 / 1000.0);
     }
     let spread_k = parse::<TemperatureDifference>(defaults::BRINE_SPREAD.value)
         .ok()?
