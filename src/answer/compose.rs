@@ -4,7 +4,8 @@ use std::collections::BTreeMap;
 
 use super::bills::pair;
 use super::estimate::{
-    Assumption, Estimate, GroundShown, HomeUsed, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, InputFile, MonthAnswer, SystemAnswer, WeatherUsed,
+    YearAnswer,
 };
 use super::home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomsAnswer, StoreAnswer,
@@ -35,6 +36,8 @@ pub struct Told {
     pub findings: Vec<Finding>,
     /// The machine of each contender, in their order.
     pub machines: Vec<Option<String>>,
+    /// The files that were read.
+    pub inputs: Vec<InputFile>,
     /// The room table's verdict for each contender, in their order.
     pub rooms: Vec<Option<RoomsAnswer>>,
     /// Transmission and ventilation of the home as it is, W/K, where they are known apart.
@@ -128,6 +131,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         carbon_scope: told.carbon_scope.clone(),
         assumptions: told.assumptions.clone(),
         findings,
+        inputs: told.inputs.clone(),
     })
 }
 

@@ -30,6 +30,19 @@ pub struct Estimate {
     pub assumptions: Vec<Assumption>,
     /// What was odd and what was done about it.
     pub findings: Vec<Finding>,
+    /// The files it was made from.
+    pub inputs: Vec<InputFile>,
+}
+
+/// A file that was read.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
+pub struct InputFile {
+    /// Its name.
+    pub file: String,
+    /// Its length.
+    pub bytes: usize,
+    /// Its SHA-256 checksum (FIPS 180-4), hexadecimal.
+    pub sha256: String,
 }
 
 /// The weather an estimate was run on.

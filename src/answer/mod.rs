@@ -18,7 +18,7 @@ pub mod weather;
 
 pub use compose::{BillsTold, Told, compare_patterns, compose};
 pub use estimate::{
-    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, InputFile, LeverAnswer, MonthAnswer, SystemAnswer,
     WeatherUsed, YearAnswer,
 };
 pub use home::{

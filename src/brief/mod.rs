@@ -16,6 +16,7 @@ mod home;
 mod hot_water;
 mod leaves;
 mod lifetime;
+mod locale;
 mod machine;
 mod notes;
 mod pattern;

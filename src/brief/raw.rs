@@ -12,6 +12,7 @@ use super::lifetime::{LifetimeTable, OutlayTable};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind, TappingProfile, WarmUp};
+use crate::locale::{DateOrder, Paper};
 use crate::units::{
     AirChangeRate, AirVolume, Area, CarbonFactor, Diffusivity, Duration, Energy,
     HeatLossCoefficient, Length, LoopResistance, Power, Share, Temperature, TemperatureDifference,
@@ -31,9 +32,38 @@ pub(super) struct Brief {
     pub lifetime: Option<Section<LifetimeTable>>,
     /// What heats the home today.
     pub today: Option<Section<SystemTable>>,
+    /// How the report is written.
+    pub report: Option<Section<ReportTable>>,
     /// What could heat it instead, one table a choice.
     #[serde(default)]
     pub choice: Vec<Section<SystemTable>>,
+}
+
+/// How the report is written. The currency is that of the tariffs.
+#[derive(Debug, Deserialize, JsonSchema)]
+pub(super) struct ReportTable {
+    /// Mark between whole and fraction: "." or ",".
+    pub decimal: Option<Leaf<String>>,
+    /// Mark between thousands: ",", ".", "space" or "none".
+    pub thousands: Option<Leaf<String>>,
+    /// Order of a date: "day-first", "month-first" or "year-first".
+    pub dates: Option<Leaf<(DateOrder,)>>,
+    /// Paper it is printed on: "A4" or "letter".
+    pub paper: Option<Leaf<(Paper,)>>,
+}
+
+impl Word for DateOrder {
+    const NAME: &'static str = "an order of a date";
+    const WORDS: &'static [(&'static str, Self)] = &[
+        ("day-first", Self::DayFirst),
+        ("month-first", Self::MonthFirst),
+        ("year-first", Self::YearFirst),
+    ];
+}
+
+impl Word for Paper {
+    const NAME: &'static str = "a size of paper";
+    const WORDS: &'static [(&'static str, Self)] = &[("a4", Self::A4), ("letter", Self::Letter)];
 }
 
 /// The home.

@@ -11,10 +11,14 @@ mod explain;
 mod failure;
 mod files;
 mod ground;
+mod init;
 mod machine;
+mod manual;
 mod odds;
 mod output;
+mod progress;
 mod rating;
+mod schema;
 mod study;
 mod tariff;
 mod weather;
@@ -24,7 +28,7 @@ use std::process::ExitCode;
 use clap::{Parser, Subcommand};
 
 pub use failure::Failure;
-pub use files::{NewFile, write_files};
+pub use files::{NewFile, check_folder, write_files};
 pub use output::{Format, print, print_json, warn};
 
 /// What a heat pump would cost to run in one home, hour by hour, beside the gas boiler.
@@ -52,6 +56,10 @@ enum Command {
     Rating(rating::Args),
     Tariff(tariff::Args),
     Ground(ground::Args),
+    Init(init::Args),
+    Schema(schema::Args),
+    Completions(manual::Completions),
+    Manual(manual::Manual),
     Weather(weather::Args),
 }
 
@@ -76,6 +84,10 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
         Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
         Command::Ground(args) => ground::run(args),
+        Command::Init(args) => init::run(args),
+        Command::Schema(args) => schema::run(args),
+        Command::Completions(args) => manual::completions(args),
+        Command::Manual(args) => manual::manual(args),
         Command::Weather(args) => weather::run(args),
     }
 }

@@ -27,7 +27,7 @@ mod traced;
 mod two_levers;
 
 pub use ageing::{Aged, SHOWN_YEAR};
-pub use balance::{BalancePoint, balance_point};
+pub use balance::{BalancePoint, balance_point, output_range_kw};
 pub use break_even::{BreakEven, Crossing, break_even};
 pub use break_even_spf::{Applies, BreakEvenSpf, Prices, break_even_spf};
 pub use case::{Account, Case, Contender};
