@@ -4,6 +4,7 @@ use std::collections::BTreeMap;
 
 use serde::Serialize;
 
+use super::home::{DesignAnswer, MeteredAnswer, PatternComparison, RoomsAnswer, StoreAnswer};
 use crate::problem::Finding;
 
 /// The comparison of all systems of a brief.
@@ -15,6 +16,9 @@ pub struct Estimate {
     pub home: HomeUsed,
     /// Today's system first, then the choices in the order of the brief.
     pub systems: Vec<SystemAnswer>,
+    /// Every system all day at its set point beside a set-back, where that was asked for.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub patterns: Vec<PatternComparison>,
     /// What would make each choice cost what today's system costs, by the choice's label.
     pub break_even: BTreeMap<String, Vec<LeverAnswer>>,
     /// Currency of every amount, ISO 4217.
@@ -26,6 +30,19 @@ pub struct Estimate {
     pub assumptions: Vec<Assumption>,
     /// What was odd and what was done about it.
     pub findings: Vec<Finding>,
+    /// The files it was made from.
+    pub inputs: Vec<InputFile>,
+}
+
+/// A file that was read.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
+pub struct InputFile {
+    /// Its name.
+    pub file: String,
+    /// Its length.
+    pub bytes: usize,
+    /// Its SHA-256 checksum (FIPS 180-4), hexadecimal.
+    pub sha256: String,
 }
 
 /// The weather an estimate was run on.
@@ -57,6 +74,15 @@ pub struct HomeUsed {
     pub design_outdoor_c: f64,
     /// Steady loss from the set point at the design temperature, gains not counted.
     pub design_heat_load_kw: f64,
+    /// Part of the coefficient through walls, roof, floor and windows, where it is known apart.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub transmission_w_per_k: Option<f64>,
+    /// Part of the coefficient with the air that is exchanged.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub ventilation_w_per_k: Option<f64>,
+    /// What meter readings say beside it.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub metered: Option<MeteredAnswer>,
 }
 
 /// One system: figures of a mean year.
@@ -115,8 +141,26 @@ pub struct SystemAnswer {
     pub hours_backup: f64,
     /// Hours that ended more than 1 K below the set point.
     pub hours_short: f64,
+    /// Hours in which hot water came out too cool.
+    pub hours_water_short: f64,
     /// Lowest indoor temperature of all years.
     pub min_indoor_c: f64,
+    /// When the rooms are heated.
+    pub pattern: String,
+    /// Heat to the rooms above that of the same system under today's pattern; absent when the pattern is today's.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub pattern_heat_kwh: Option<f64>,
+    /// Cost above that of the same system under today's pattern; absent when the pattern is today's.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub pattern_cost: Option<f64>,
+    /// The design point.
+    pub design: DesignAnswer,
+    /// The room table's verdict, where there is one.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub rooms: Option<RoomsAnswer>,
+    /// The hot-water store, where there is one.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub store: Option<StoreAnswer>,
     /// Starts of the compressor.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub starts: Option<f64>,
@@ -140,6 +184,9 @@ pub struct SystemAnswer {
     /// What it costs to put in.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub capital: Option<f64>,
+    /// The same part by part, where it is given so.
+    #[serde(skip_serializing_if = "BTreeMap::is_empty")]
+    pub capital_parts: BTreeMap<String, f64>,
     /// Which year of a buried loop's life the figures are of, and what its first one comes to.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub ground: Option<GroundShown>,
@@ -202,6 +249,8 @@ pub struct LeverAnswer {
     pub lever: String,
     /// Its unit.
     pub unit: String,
+    /// What the choice and today's system are compared by.
+    pub measure: String,
     /// Where it stands.
     pub now: f64,
     /// Values at which the choice costs what today's system costs; empty when there is none in the range.
@@ -210,6 +259,11 @@ pub struct LeverAnswer {
     pub between: [f64; 2],
     /// Each value in words: "electricity 4 % cheaper".
     pub conditions: Vec<String>,
+    /// What holds beside each value: "cheaper below that".
+    pub sides: Vec<String>,
+    /// How it stays over the whole range where there is no such value: "dearer"; absent where there is one.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub stays: Option<String>,
     /// The same as a sentence.
     pub sentence: String,
 }

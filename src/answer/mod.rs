@@ -1,16 +1,28 @@
 //! The JSON contract as plain structs, and the making of the estimate from what the runs came to.
 
+pub mod bills;
 mod compose;
 pub mod cycle;
 mod estimate;
 pub mod explain;
 pub mod ground;
+mod home;
+mod lever;
+pub mod lifetime;
 pub mod machine;
+pub mod odds;
 pub mod rating;
+pub mod study;
 pub mod tariff;
+pub mod weather;
 
-pub use compose::{Told, compose};
+pub use compose::{BillsTold, Told, compare_patterns, compose};
 pub use estimate::{
-    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, InputFile, LeverAnswer, MonthAnswer, SystemAnswer,
     WeatherUsed, YearAnswer,
 };
+pub use home::{
+    DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomAnswer, RoomsAnswer,
+    StoreAnswer,
+};
+pub use lever::short;

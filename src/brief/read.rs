@@ -4,22 +4,30 @@ use std::collections::HashMap;
 use std::path::Path;
 use std::sync::Arc;
 
+use chrono::Datelike;
 use chrono_tz::Tz;
 use schemars::Schema;
 
+use super::bills::{BillsMade, Over, named, of_file};
 use super::energy::{Energy, energy};
 use super::files::Folder;
 use super::home::WeatherFacts;
+use super::lifetime::terms;
+use super::locale::locale;
 use super::notes::Notes;
 use super::raw;
 use super::system::{Surroundings, contender};
 use super::weather::weather;
 use super::{defaults, demo};
-use crate::answer::Told;
+use crate::answer::{Assumption, BillsTold, Told};
 use crate::calendar::CivilHour;
 use crate::document::{Check, Document, Section, read_text};
+use crate::locale::Locale;
 use crate::problem::Problems;
-use crate::study::Case;
+use crate::signature::DailyWeather;
+use crate::source::{AnnualSwing, undisturbed_c};
+use crate::study::{Case, scale_to_fuel};
+use crate::units::{Diffusivity, parse};
 use crate::weather::Weather;
 use crate::year::Site;
 
@@ -30,6 +38,8 @@ pub struct Brief {
     pub case: Case,
     /// What the estimate tells beside the figures.
     pub told: Told,
+    /// How figures are written.
+    pub locale: Locale,
 }
 
 impl Brief {
@@ -40,7 +50,10 @@ impl Brief {
     pub fn read(path: &Path) -> Result<Self, Problems> {
         let text = read_text(path)?;
         let folder = path.parent().map(Path::to_owned).unwrap_or_default();
-        Self::parse(&path.display().to_string(), &text, &Folder::Disk(folder))
+        let folder = Folder::disk(folder);
+        let name = path.display().to_string();
+        folder.note(name.clone(), text.as_bytes());
+        Self::parse(&name, &text, &folder)
     }
 
     /// The demonstration brief that is built in.
@@ -48,9 +61,17 @@ impl Brief {
     /// # Errors
     /// As [`Brief::read`]; a test holds that there are none.
     pub fn demonstration() -> Result<Self, Problems> {
-        let folder = Folder::Embedded(demo::FOLDER);
+        let folder = Folder::embedded(demo::FOLDER);
         let text = folder.text(demo::BRIEF)?;
         Self::parse(&folder.name(demo::BRIEF), &text, &folder)
+    }
+
+    /// What a file of meter readings says about the home of a brief, with what was assumed.
+    ///
+    /// # Errors
+    /// Every problem of the file, of the brief's home and weather, and readings that show no heating.
+    pub fn bills(file: &Path, brief: &Path) -> Result<(BillsMade, Vec<Assumption>), Problems> {
+        of_file(file, brief)
     }
 
     /// JSON Schema of a brief.
@@ -89,26 +110,48 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         .map(|(weather, zone)| Arc::new(site(weather, zone)));
     let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
     labels_differ(raw, check);
+    let locale = locale(raw.report.as_ref(), check);
 
     // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
     let facts = weather.as_ref().map_or(
         WeatherFacts {
             design_c: -5.0,
             has_radiation: true,
+            main_c: None,
         },
         facts,
     );
     let mut contenders = Vec::new();
     let mut machines = Vec::new();
+    let mut rooms = Vec::new();
+    let mut parts_w_per_k = None;
     let mut findings = weather
         .as_ref()
         .map_or_else(Vec::new, |weather| weather.findings.clone());
+    let bills = weather.as_ref().zip(zone).and_then(|(weather, zone)| {
+        let today = raw.today.as_ref();
+        let today_efficiency =
+            today.and_then(|today| today.efficiency.as_ref()?.value().ok().copied());
+        let home = raw.home.as_ref();
+        let over = Over {
+            home,
+            today_efficiency,
+            weather,
+            facts: &facts,
+            zone,
+            folder,
+        };
+        named(&over, check, &mut notes)
+    });
+    let bills = bills.flatten();
+    findings.extend(bills.iter().flat_map(|bills| bills.findings.clone()));
     if let Some(home) = &raw.home {
         let systems = raw.today.iter().map(|today| (today, true));
         for (table, today) in systems.chain(raw.choice.iter().map(|choice| (choice, false))) {
             let surroundings = Surroundings {
                 home,
                 facts: &facts,
+                bills: bills.as_ref(),
                 site: site.as_deref(),
                 energy: energy.as_ref(),
                 folder,
@@ -117,21 +160,34 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             if let Some(made) = contender(table, &surroundings, check, &mut notes) {
                 contenders.push(made.contender);
                 machines.push(made.machine);
-                findings.extend(made.findings);
+                rooms.push(made.rooms);
+                if today {
+                    parts_w_per_k = made.parts_w_per_k;
+                }
+                // What is true of the home is found again with every system: once is enough.
+                for finding in made.findings {
+                    if !findings.contains(&finding) {
+                        findings.push(finding);
+                    }
+                }
             }
         }
     }
+    let told = raw
+        .choice
+        .iter()
+        .any(|choice| choice.capital.is_some() || choice.outlay.is_some());
+    let terms = terms(raw.lifetime.as_ref(), told, check, &mut notes);
     let Energy {
         currency,
         carbon_scope,
         ..
     } = energy?;
-    let (weather, site, zone) = (weather?, site?, zone?);
-    let mut case = Case {
-        site,
-        time_zone: zone,
-        currency,
-        contenders,
+    let (weather, site, zone, locale) = (weather?, site?, zone?, locale?);
+    let mut case = Case::new(site, zone, currency, terms?, contenders);
+    let bills = match bills {
+        Some(bills) if check.problems().is_empty() => Some(scaled(bills, &mut case, check)?),
+        _ => None,
     };
     case.age_grounds();
     Some(Brief {
@@ -143,11 +199,31 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             assumptions: notes.into_vec(),
             findings,
             machines,
+            inputs: folder.inputs(),
+            rooms,
+            parts_w_per_k,
+            bills,
         },
+        locale,
     })
 }
 
-fn time_zone(
+/// What the readings tell, the case scaled to them where the brief asks for it.
+fn scaled(bills: BillsMade, case: &mut Case, check: &mut Check) -> Option<BillsTold> {
+    let days = DailyWeather::of_hours(&case.site.civil, &case.site.outdoor_c);
+    let fuel_kwh = bills.signature.fuel_kwh(days.all()).value / case.site.years.len() as f64;
+    let scaled_by = match bills.scale {
+        true => Some(check.take(scale_to_fuel(case, fuel_kwh))?),
+        false => None,
+    };
+    Some(BillsTold {
+        file: bills.file,
+        signature: bills.signature,
+        scaled_by,
+    })
+}
+
+pub(super) fn time_zone(
     home: Option<&Section<raw::Home>>,
     check: &mut Check,
     notes: &mut Notes,
@@ -187,7 +263,7 @@ fn site(weather: &Weather, zone: Tz) -> Site {
     }
 }
 
-fn facts(weather: &Weather) -> WeatherFacts {
+pub(super) fn facts(weather: &Weather) -> WeatherFacts {
     /// Share of the hours that are colder than the design temperature.
     const COLDER: f64 = 0.004;
     let mut sorted = weather.outdoor_c.clone();
@@ -196,7 +272,29 @@ fn facts(weather: &Weather) -> WeatherFacts {
     WeatherFacts {
         design_c: sorted.get(place).copied().unwrap_or(0.0),
         has_radiation: weather.global_w_per_m2.is_some(),
+        main_c: main_c(weather),
     }
+}
+
+/// Ground at the depth of a water main in the middle of each month, °C.
+fn main_c(weather: &Weather) -> Option<[f64; 12]> {
+    /// Depth of a water main, m. Common practice, no source.
+    const DEPTH_M: f64 = 1.0;
+    /// Water does not come frozen, °C.
+    const LEAST_C: f64 = 4.0;
+    const HOURS_PER_MONTH: f64 = 8760.0 / 12.0;
+    let wave = AnnualSwing::fit(&weather.outdoor_c)?;
+    let diffusivity = parse::<Diffusivity>(defaults::SOIL_DIFFUSIVITY.value)
+        .ok()?
+        .m2_per_s();
+    // The axis may begin in any month: its first hour stands for the middle of the month it lies in.
+    let first0 = weather.axis.start.month0() as usize;
+    let mut months = [0.0; 12];
+    for i in 0..12 {
+        let hour = (i as f64 + 0.5) * HOURS_PER_MONTH;
+        months[(first0 + i) % 12] = undisturbed_c(&wave, DEPTH_M, diffusivity, hour).max(LEAST_C);
+    }
+    Some(months)
 }
 
 /// Results are named by label: each must be there once.

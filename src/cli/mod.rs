@@ -4,23 +4,31 @@
 //! `run(&Args) -> Result<(), Failure>`. Text goes to stdout, findings and progress to stderr, and the exit status is 0
 //! done, 1 the input is wrong, 2 usage, 3 cannot write.
 
+mod bills;
 mod cycle;
 mod estimate;
 mod explain;
 mod failure;
 mod files;
 mod ground;
+mod init;
 mod machine;
+mod manual;
+mod odds;
 mod output;
+mod progress;
 mod rating;
+mod schema;
+mod study;
 mod tariff;
+mod weather;
 
 use std::process::ExitCode;
 
 use clap::{Parser, Subcommand};
 
 pub use failure::Failure;
-pub use files::{NewFile, write_files};
+pub use files::{NewFile, check_folder, write_files};
 pub use output::{Format, print, print_json, warn};
 
 /// What a heat pump would cost to run in one home, hour by hour, beside the gas boiler.
@@ -39,12 +47,20 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Estimate(estimate::Args),
+    Study(study::Args),
+    Odds(odds::Args),
+    Bills(bills::Args),
     Explain(explain::Args),
     Cycle(cycle::Args),
     Machine(machine::Args),
     Rating(rating::Args),
     Tariff(tariff::Args),
     Ground(ground::Args),
+    Init(init::Args),
+    Schema(schema::Args),
+    Completions(manual::Completions),
+    Manual(manual::Manual),
+    Weather(weather::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -59,11 +75,19 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
+        Command::Study(args) => study::run(args),
+        Command::Odds(args) => odds::run(args),
+        Command::Bills(args) => bills::run(args),
         Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
         Command::Machine(args) => machine::run(args),
         Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
         Command::Ground(args) => ground::run(args),
+        Command::Init(args) => init::run(args),
+        Command::Schema(args) => schema::run(args),
+        Command::Completions(args) => manual::completions(args),
+        Command::Manual(args) => manual::manual(args),
+        Command::Weather(args) => weather::run(args),
     }
 }

@@ -1,19 +1,5 @@
 //! Set points and signals hour by hour, made before the run.
 
-use crate::year::{Plan, Signal};
+mod pattern;
 
-/// A plan with one set point (°C) day and night; backup only keeps the rooms within a band (K) below it.
-pub fn steady(
-    hours: usize,
-    set_point_c: f64,
-    backup_band_k: f64,
-    electricity: Signal,
-    fuel: Option<Signal>,
-) -> Plan {
-    Plan {
-        set_point_c: vec![set_point_c; hours],
-        backup_below_c: vec![set_point_c - backup_band_k; hours],
-        electricity,
-        fuel,
-    }
-}
+pub use pattern::{Ability, following};

@@ -2,11 +2,12 @@
 
 use std::fmt::Write as _;
 
+use super::home::home_in_words;
 use super::table::plain_table_within;
 use crate::answer::{Estimate, LeverAnswer, SystemAnswer};
 
 /// Width of everything that is printed, characters.
-const WIDTH: u16 = 80;
+pub(super) const WIDTH: u16 = 80;
 /// Systems beside each other, today's among them.
 const SYSTEMS_ABREAST: usize = 4;
 
@@ -30,6 +31,9 @@ pub fn estimate_text(estimate: &Estimate, sources: bool) -> String {
             "{}",
             wrapped(&in_words(choice, levers, &estimate.currency), "", "  ")
         );
+    }
+    for line in home_in_words(estimate) {
+        let _ = writeln!(text, "{}", wrapped(&line, "", "  "));
     }
     let _ = writeln!(text, "\n{}", assumptions(estimate, sources));
     let _ = write!(text, "\n{}", wrapped(LIMITS, "", ""));
@@ -83,6 +87,9 @@ const LINES: &[Line] = &[
     ("Carbon, kg CO2e", |s| Some(format!("{:.0}", s.carbon_kg))),
     ("Heat to rooms, kWh", |s| {
         Some(format!("{:.0}", s.space_heat_kwh))
+    }),
+    ("  by another pattern", |s| {
+        s.pattern_heat_kwh.map(|kwh| format!("{kwh:+.0}"))
     }),
     ("Heat to hot water, kWh", |s| {
         Some(format!("{:.0}", s.hot_water_kwh))
@@ -141,6 +148,12 @@ const LINES: &[Line] = &[
     }),
     ("Hours short of heat", |s| {
         Some(format!("{:.0}", s.hours_short))
+    }),
+    ("Hours of cool taps", |s| {
+        (s.hours_water_short >= 0.5).then(|| format!("{:.0}", s.hours_water_short))
+    }),
+    ("Design load carried", |s| {
+        Some(format!("{:.0} %", 100.0 + s.design.margin_percent))
     }),
     ("Coldest indoors", |s| {
         Some(format!("{:.1} °C", s.min_indoor_c))
@@ -221,7 +234,7 @@ fn assumptions(estimate: &Estimate, sources: bool) -> String {
     wrapped(&text, "", "  ")
 }
 
-fn wrapped(text: &str, first: &str, others: &str) -> String {
+pub(super) fn wrapped(text: &str, first: &str, others: &str) -> String {
     let options = textwrap::Options::new(usize::from(WIDTH))
         .initial_indent(first)
         .subsequent_indent(others);

@@ -44,23 +44,51 @@ struct Surplus<'a> {
     ground: Memory,
 }
 
+/// What a machine's source offers on a cold night of an outdoor temperature (°C), ground and water at their coldest.
+pub(super) fn cold_side(machine: &MachineSystem, outdoor_c: f64, ground: &Memory) -> ColdSide {
+    let offer = machine.source.cold_offer(outdoor_c, ground);
+    ColdSide {
+        open_c: offer.open_c,
+        k_per_kw: offer.k_per_kw,
+        relative_humidity: None,
+    }
+}
+
 impl Surplus<'_> {
     fn at(&self, outdoor_c: f64) -> f64 {
-        let home = &self.system.home;
-        let load_kw = home
-            .fabric
-            .design_load_kw(self.indoor_c, outdoor_c)
-            .max(0.0);
-        // A cold night meets ground and water at their coldest.
-        let offer = self.machine.source.cold_offer(outdoor_c, &self.ground);
-        let cold = ColdSide {
-            open_c: offer.open_c,
-            k_per_kw: offer.k_per_kw,
-            relative_humidity: None,
-        };
-        let flow_c = home.emitters.at_load(load_kw, self.indoor_c).flow_c;
-        self.machine.machine.greatest_output_kw(&cold, flow_c) - load_kw - self.water_kw
+        let (_, greatest_kw) = output_range_kw(
+            self.system,
+            self.machine,
+            self.indoor_c,
+            outdoor_c,
+            &self.ground,
+        );
+        greatest_kw - load_kw(self.system, self.indoor_c, outdoor_c) - self.water_kw
     }
+}
+
+/// The steady loss without gains, kW.
+fn load_kw(system: &System, indoor_c: f64, outdoor_c: f64) -> f64 {
+    let fabric = &system.home.fabric;
+    fabric.design_load_kw(indoor_c, outdoor_c).max(0.0)
+}
+
+/// Least output without going on and off and greatest output, kW, at an outdoor temperature and the flow temperature that
+/// the emitters need for the steady loss there; ground and water at their coldest.
+pub fn output_range_kw(
+    system: &System,
+    machine: &MachineSystem,
+    indoor_c: f64,
+    outdoor_c: f64,
+    ground: &Memory,
+) -> (f64, f64) {
+    let emitters = &system.home.emitters;
+    let load_kw = load_kw(system, indoor_c, outdoor_c);
+    let cold = cold_side(machine, outdoor_c, ground);
+    let flow_c = emitters.at_load(load_kw, indoor_c).flow_c + emitters.header_k();
+    let greatest_kw = machine.machine.greatest_output_kw(&cold, flow_c);
+    let least_kw = machine.machine.least_output_kw(&cold, flow_c);
+    (least_kw.min(greatest_kw), greatest_kw)
 }
 
 impl CostFunction for Surplus<'_> {
@@ -88,7 +116,7 @@ pub fn balance_point(
         .home
         .hot_water
         .as_ref()
-        .map_or(0.0, |water| water.daily_kwh);
+        .map_or(0.0, |water| water.mean_daily_kwh());
     let water_kw = if with_hot_water {
         daily_kwh / 24.0
     } else {

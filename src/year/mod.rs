@@ -16,7 +16,7 @@ mod totals;
 pub use ledger::Ledger;
 pub use metered::Metered;
 pub use row::{COLUMNS, Column, Flags, Row, Sums};
-pub use site::{Plan, Signal, Site};
+pub use site::{Plan, Recovery, Signal, Site};
 pub use step::{DutyKind, Probe, Unwatched, run, step};
 pub use system::{Heating, MachineSystem, State, System};
 pub use totals::Totals;

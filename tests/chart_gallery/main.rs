@@ -9,6 +9,8 @@ mod annual_cost;
 #[cfg(test)]
 mod common;
 #[cfg(test)]
+mod flows;
+#[cfg(test)]
 mod hours;
 #[cfg(test)]
 mod loads;
