@@ -125,12 +125,10 @@ impl Reader {
                     self.blocks.push(Block::Picture { name, caption });
                 }
             }
-            TagEnd::Paragraph => {
-                // Inside a list the item takes the line.
-                if !self.line.is_empty() && self.open_items == 0 {
-                    let line = std::mem::take(&mut self.line);
-                    self.blocks.push(Block::Paragraph(line));
-                }
+            // Inside a list the item takes the line.
+            TagEnd::Paragraph if !self.line.is_empty() && self.open_items == 0 => {
+                let line = std::mem::take(&mut self.line);
+                self.blocks.push(Block::Paragraph(line));
             }
             TagEnd::Item => {
                 let line = std::mem::take(&mut self.line);
@@ -157,7 +155,7 @@ impl Reader {
     }
 }
 
-/// `text` with no-break spaces between a number and its unit.
+/// `text` with no-break spaces between a number and its unit, and true minus signs.
 fn bound_units(text: &str) -> String {
     const UNITS: &[&str] = &["%", "°C", "K", "kW", "kWh", "W", "W/K", "kg", "m²", "h"];
     let mut out = String::with_capacity(text.len());
@@ -169,7 +167,13 @@ fn bound_units(text: &str) -> String {
             out.pop();
             out.push('\u{a0}');
         }
-        out.push_str(word);
+        match word.strip_prefix('-') {
+            Some(number) if number.starts_with(|c: char| c.is_ascii_digit()) => {
+                out.push('−');
+                out.push_str(number);
+            }
+            _ => out.push_str(word),
+        }
     }
     out
 }
@@ -205,8 +209,8 @@ mod tests {
     #[test]
     fn a_number_is_not_parted_from_its_unit() {
         assert_eq!(
-            bound_units("electricity 17 % dearer, or 53 °C (now 5 K)."),
-            "electricity 17\u{a0}% dearer, or 53\u{a0}°C (now 5\u{a0}K)."
+            bound_units("electricity 17 % dearer, or -3 °C (now 5 K)."),
+            "electricity 17\u{a0}% dearer, or −3\u{a0}°C (now 5\u{a0}K)."
         );
     }
 

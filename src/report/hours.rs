@@ -79,9 +79,7 @@ mod tests {
     #[test]
     fn the_coldest_spell_begins_at_midnight() {
         let mut outdoor_c = vec![5.0; 24 * 10];
-        for hour in 24 * 6..24 * 9 {
-            outdoor_c[hour] = -1.0;
-        }
+        outdoor_c[24 * 6..24 * 9].fill(-1.0);
         outdoor_c[30] = -9.0;
         let site = site(outdoor_c);
         assert_eq!(coldest_days_of(&site), Some(24 * 6..24 * 9));

@@ -109,8 +109,9 @@ fn write_section(
                     let svg = drawn.picture.svg_without_fonts()?;
                     let _ = write!(
                         out,
-                        "<figure>\n<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{}\">\n{svg}\n</div>\n\
+                        "<figure id=\"picture-{}\">\n<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{}\">\n{svg}\n</div>\n\
                          <figcaption>{}</figcaption>\n</figure>\n",
+                        escaped(&name),
                         escaped(&format!("Picture: {} ({name})", drawn.picture.title)),
                         text(&caption)
                     );
