@@ -68,16 +68,6 @@ impl Surplus<'_> {
     }
 }
 
-/// What a machine draws on in a cold night: the air of that night, or ground and water at their coldest.
-pub(super) fn coldest(machine: &MachineSystem, outdoor_c: f64, ground: &Memory) -> ColdSide {
-    let offer = machine.source.cold_offer(outdoor_c, ground);
-    ColdSide {
-        open_c: offer.open_c,
-        k_per_kw: offer.k_per_kw,
-        relative_humidity: None,
-    }
-}
-
 impl CostFunction for Surplus<'_> {
     type Param = f64;
     type Output = f64;
