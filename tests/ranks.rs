@@ -1,4 +1,5 @@
 //! A room imports only rooms of a lower rank, never its own rank or a higher one.
+#![cfg(test)]
 
 use std::fs;
 use std::path::{Path, PathBuf};

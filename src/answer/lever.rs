@@ -185,7 +185,11 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
                 Some(format!("{w_per_k:.0} W/K")),
             )
         }
-        Lever::FlowTemperature => format!("a design flow of {value:.0} °C (now {now:.0} °C)"),
+        Lever::FlowTemperature => {
+            // Close to where it stands a whole kelvin would say nothing.
+            let digits = usize::from((value - now).abs() < 2.0);
+            format!("a design flow of {value:.digits$} °C (now {now:.0} °C)")
+        }
         Lever::Indoor => format!("rooms at {value:.1} °C (now {now:.1} °C)"),
         Lever::HotWater => times("hot water", "more", "less", None),
         Lever::RatedOutput => format!("a machine of {value:.1} kW (now {now:.1} kW)"),

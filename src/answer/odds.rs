@@ -256,7 +256,7 @@ fn chance_in_words(chance: f64) -> String {
         return "hardly a chance".to_owned();
     }
     if chance > 0.97 {
-        return "it is nearly certain".to_owned();
+        return "nearly certain".to_owned();
     }
     let nearest = SAID
         .iter()

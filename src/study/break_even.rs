@@ -25,7 +25,7 @@ pub struct Crossing {
     /// Whether the choice is the better one above it.
     pub better_above: bool,
     /// How much more the choice still has there. More than a cent where the year jumps: moving a lever by a hair can move a
-    /// block of hot water by an hour, and then no value gives equality.
+    /// block of hot water by an hour or bring the brine to the machine's limit, and then no value gives equality.
     pub left: f64,
 }
 

@@ -288,6 +288,14 @@ impl Lever {
         stands.map(|stands| case.moved_to(self, choice).unwrap_or(stands))
     }
 
+    /// Moves it for a choice of a case; see [`Case::apply`].
+    ///
+    /// # Errors
+    /// A value that it cannot take.
+    pub fn apply(self, value: f64, case: &mut Case, choice: usize) -> Result<(), Problems> {
+        case.apply(choice, &[(self, value)])
+    }
+
     /// What has to be done again when it is moved.
     pub(super) fn again(self) -> Again {
         match self {
