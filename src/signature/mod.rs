@@ -1,6 +1,6 @@
 //! What a home's own meter says: base load, heat-loss coefficient and base temperature from readings and weather.
 //!
-//! [`Readings`] are read and checked, [`DailyWeather`] is the same period's weather, [`fit`] makes a [`Signature`] of both
+//! [`Readings`] are read and checked, [`DailyWeather`] is the same period's weather, [`fit()`] makes a [`Signature`] of both
 //! (the energy signature of Fels 1986), whose limits hold what the heater's efficiency and the hot water leave open.
 
 mod days;

@@ -1,7 +1,7 @@
 //! How sure: levers within their spreads, sampled together, and the chances that follow.
 //!
 //! [`Hypercube`] gives stratified shares of one, [`Range`] turns a share into a value of a lever, [`Sampler`] moves all levers and
-//! runs every system, block by block, and [`shares`] says which lever made the spread.
+//! runs every system, block by block, and [`shares()`] says which lever made the spread.
 
 mod hypercube;
 mod quantiles;
