@@ -3,6 +3,7 @@
 mod compose;
 pub mod cycle;
 mod estimate;
+pub mod explain;
 pub mod tariff;
 
 pub use compose::{Told, compose};

@@ -6,6 +6,7 @@
 
 mod cycle;
 mod estimate;
+mod explain;
 mod failure;
 mod files;
 mod output;
@@ -35,6 +36,7 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Estimate(estimate::Args),
+    Explain(explain::Args),
     Cycle(cycle::Args),
     Tariff(tariff::Args),
 }
@@ -51,6 +53,7 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
+        Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
         Command::Tariff(args) => tariff::run(args),
     }

@@ -158,6 +158,11 @@ impl Emitters {
         self.greatest_output_kw
     }
 
+    /// Mean water minus room temperature at the design load, K.
+    pub fn design_excess_k(&self) -> f64 {
+        self.design_excess_k
+    }
+
     /// Flow minus return at the design load, K.
     pub fn design_spread_k(&self) -> f64 {
         self.design_spread_k

@@ -89,6 +89,11 @@ impl Fabric {
         self.heat_loss_kw_per_k * 1000.0
     }
 
+    /// Share of a temperature difference that is left after an hour, exp(−1 h/τ).
+    pub fn left_after_hour(&self) -> f64 {
+        self.left_after_hour
+    }
+
     /// Heat capacity over heat-loss coefficient, h.
     pub fn time_constant_h(&self) -> f64 {
         self.capacity_kwh_per_k / self.heat_loss_kw_per_k

@@ -1,9 +1,11 @@
 //! Answers as text and files.
 
+mod explain;
 mod ledger;
 mod table;
 mod text;
 
+pub use explain::explain_text;
 pub use ledger::{ledger_csv, ledger_legend};
 pub use table::{plain_table, plain_table_within};
 pub use text::estimate_text;

@@ -58,7 +58,12 @@ impl Dearer<'_> {
             let cost = |contender: usize, outcome: &Outcome| {
                 let fuel = outcome.fuel.as_ref();
                 let years = &pair.site.years;
-                price(&pair.contenders[contender], years, &outcome.electricity, fuel)
+                price(
+                    &pair.contenders[contender],
+                    years,
+                    &outcome.electricity,
+                    fuel,
+                )
             };
             Ok(cost(1, &self.outcomes[self.choice])?.total - cost(0, &self.outcomes[0])?.total)
         } else {
