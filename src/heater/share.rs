@@ -23,12 +23,12 @@ pub enum Side {
     Boiler,
 }
 
-/// What an hour would take, one way or the other.
+/// What a kilowatt-hour of heat would take in an hour, one way or the other.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Effort {
-    /// Cost of the hour.
+    /// Its cost.
     pub cost: f64,
-    /// Carbon of the hour, kg.
+    /// Its carbon, kg.
     pub carbon_kg: f64,
 }
 

@@ -117,6 +117,14 @@ impl Store {
         }
     }
 
+    /// The same store with its set point moved by some kelvins; whether a block is due moves with it.
+    pub fn shifted(&self, by_k: f64) -> Self {
+        Self {
+            set_point_c: self.set_point_c + by_k,
+            ..*self
+        }
+    }
+
     /// Draws and loses an hour's heat, then says what a block must bring; `charging` is whether one is under way.
     pub fn step(&self, store_c: f64, drawn_kwh: f64, charging: bool) -> StoreStep {
         let lost_kwh = self.loss_kw_per_k * (store_c - self.surroundings_c);
