@@ -4,6 +4,8 @@ mod compose;
 pub mod cycle;
 mod estimate;
 pub mod explain;
+pub mod machine;
+pub mod rating;
 pub mod tariff;
 
 pub use compose::{Told, compose};

@@ -9,7 +9,9 @@ mod estimate;
 mod explain;
 mod failure;
 mod files;
+mod machine;
 mod output;
+mod rating;
 mod tariff;
 
 use std::process::ExitCode;
@@ -38,6 +40,8 @@ enum Command {
     Estimate(estimate::Args),
     Explain(explain::Args),
     Cycle(cycle::Args),
+    Machine(machine::Args),
+    Rating(rating::Args),
     Tariff(tariff::Args),
 }
 
@@ -55,6 +59,8 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
         Command::Estimate(args) => estimate::run(args),
         Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
+        Command::Machine(args) => machine::run(args),
+        Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
     }
 }

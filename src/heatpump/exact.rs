@@ -1,6 +1,6 @@
 //! One hour solved again without the map, to be looked into.
 
-use super::deliver::{ColdSide, Delivered, Duty};
+use super::duty::{ColdSide, Delivered, Duty};
 use super::frost::FrostLoss;
 use super::heat_pump::HeatPump;
 use super::machine::{Operation, SolveError};

@@ -108,7 +108,16 @@ pub fn fit(sheet: &Sheet) -> Result<Fitted, Problems> {
             },
         )
     })?;
-    if machine.strength() < 1.0 {
+    if !map.is_monotone(&limits) {
+        findings.push(
+            Finding::new(
+                Severity::Warning,
+                "the machine that meets these points best is not monotone: somewhere its COP rises with flow or falls with source temperature",
+                "check the points against the datasheet",
+            )
+            .at(&Place::file(sheet.file.clone())),
+        );
+    } else if machine.strength() < 1.0 {
         findings.push(
             Finding::new(
                 Severity::Note,

@@ -11,6 +11,8 @@ use super::options::{MAX_EXPANDED_BYTES, ReadOptions};
 use crate::problem::{Finding, Place, Problem, Severity};
 
 const GZIP: &[u8] = &[0x1f, 0x8b];
+/// How far into a file zero bytes are looked for; further in they make a row that cannot be read.
+const LOOKED_AT_BYTES: usize = 1 << 16;
 const ZIP: &[u8] = b"PK\x03\x04";
 
 /// The text of a file.
@@ -79,7 +81,7 @@ pub(super) fn text<'a>(
         );
         return Ok(Cow::Owned(text.into_owned()));
     }
-    if bytes.contains(&0) {
+    if bytes[..bytes.len().min(LOOKED_AT_BYTES)].contains(&0) {
         let encoding = if looks_like_utf16(&bytes, 1) {
             UTF_16LE
         } else if looks_like_utf16(&bytes, 0) {

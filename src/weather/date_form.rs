@@ -5,7 +5,9 @@ use super::options::ReadOptions;
 use super::row_reader::Fields;
 use super::time_stamp::{DateForm, Stamp, stamp, stamp_of_parts, stamp_of_two};
 
-/// Rows looked at: 13 days of ten-minute readings hold a day above 12, which settles day-first or month-first.
+/// Rows that settle every form but the order of day and month.
+pub(super) const FIRST_ROWS: usize = 200;
+/// Rows looked at for that: 13 days of ten-minute readings hold a day above 12, which settles day-first or month-first.
 pub(super) const SAMPLED_ROWS: usize = 5000;
 
 /// Forms tried, the least ambiguous first.
@@ -84,6 +86,11 @@ impl TimeForm {
         }
     }
 
+    /// Whether the form has its year last, so that more rows can tell day from month.
+    pub(super) fn day_and_month_may_be_swapped(&self) -> bool {
+        matches!(self.form, DateForm::DayFirst | DateForm::MonthFirst)
+    }
+
     /// The form in words.
     pub(super) fn words(&self) -> &'static str {
         match self.columns {
@@ -94,7 +101,7 @@ impl TimeForm {
 }
 
 /// What the sample says.
-#[derive(Debug, Clone, PartialEq, Eq)]
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(super) struct Decision {
     pub form: TimeForm,
     /// Whether day-first was taken although the readings allow month-first as well.
@@ -139,10 +146,7 @@ pub(super) fn decide(
         }
     }
     let (_, mut decision) = best?;
-    if matches!(
-        decision.form.form,
-        DateForm::DayFirst | DateForm::MonthFirst
-    ) {
+    if decision.form.day_and_month_may_be_swapped() {
         let with = |form| TimeForm {
             form,
             ..decision.form

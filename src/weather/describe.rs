@@ -5,6 +5,7 @@ use std::ops::Range;
 use chrono::NaiveDate;
 
 use super::degree_days::{self, Rule};
+use super::distribution::Distribution;
 use super::{Kind, Weather};
 use crate::problem::{Finding, Severity};
 
@@ -102,13 +103,12 @@ pub struct Description {
 ///
 /// Returns nothing for no hours at all.
 pub fn describe(series: &[Weather], bases_c: &[f64]) -> Option<Description> {
-    let mut sorted: Vec<f64> = series
-        .iter()
-        .flat_map(|weather| &weather.outdoor_c)
-        .copied()
-        .collect();
-    sorted.sort_unstable_by(f64::total_cmp);
-    let (&min_c, &max_c) = (sorted.first()?, sorted.last()?);
+    let spread = Distribution::new(
+        series
+            .iter()
+            .map(|weather| weather.outdoor_c.as_slice())
+            .collect(),
+    )?;
     let days: Vec<Vec<(NaiveDate, Range<usize>)>> = series.iter().map(Weather::days).collect();
     let mut by_year = Vec::new();
     for (weather, days) in series.iter().zip(&days) {
@@ -122,42 +122,26 @@ pub fn describe(series: &[Weather], bases_c: &[f64]) -> Option<Description> {
         .collect();
     let degree_days = mean_degree_days(&whole).unwrap_or_else(|| total_degree_days(&by_year));
     Some(Description {
-        hours: sorted.len(),
+        hours: spread.hours,
         years: series.iter().map(|weather| weather.axis.years()).sum(),
         whole_years: whole.len(),
-        mean_c: sorted.iter().sum::<f64>() / sorted.len() as f64,
-        min_c,
-        max_c,
+        mean_c: spread.mean_c,
+        min_c: spread.min_c,
+        max_c: spread.max_c,
         percentiles: PERCENTILES
             .iter()
-            .map(|&share| (share, colder(&sorted, share)))
+            .map(|&share| (share, spread.colder(share)))
             .collect(),
-        design_99_6_c: colder(&sorted, 0.004),
-        design_99_c: colder(&sorted, 0.01),
+        design_99_6_c: spread.colder(0.004),
+        design_99_c: spread.colder(0.01),
         coldest_hour: coldest_hour(series)?,
         coldest_day: coldest_days_of(series, &days, 1),
         coldest_three_days: coldest_days_of(series, &days, 3),
-        hours_per_degree: per_degree(&sorted),
+        hours_per_degree: spread.per_degree(),
         degree_days,
         by_year,
         findings: series.iter().filter_map(unfit_for_peak_load).collect(),
     })
-}
-
-/// The temperature that a share of the hours fall below: as many hours are colder as the share says, rounded down.
-fn colder(sorted: &[f64], share: f64) -> f64 {
-    let at = (share * sorted.len() as f64).floor() as usize;
-    sorted
-        .get(at.min(sorted.len().saturating_sub(1)))
-        .copied()
-        .unwrap_or(f64::NAN)
-}
-
-fn per_degree(sorted: &[f64]) -> Vec<(i32, usize)> {
-    sorted
-        .chunk_by(|a, b| a.floor() == b.floor())
-        .map(|degree| (degree[0].floor() as i32, degree.len()))
-        .collect()
 }
 
 fn year_figures(
@@ -359,13 +343,6 @@ mod tests {
             described.hours_per_degree,
             [(0, 24), (1, 48), (2, 48), (3, 48), (4, 48), (5, 24)]
         );
-    }
-
-    #[test]
-    fn as_many_hours_are_colder_as_the_share_says() {
-        let sorted: Vec<f64> = (0..8760).map(f64::from).collect();
-        assert_eq!(colder(&sorted, 0.004), 35.0);
-        assert_eq!(colder(&sorted, 0.01), 87.0);
     }
 
     #[test]

@@ -33,6 +33,11 @@ impl Faults {
         }
     }
 
+    /// Whether there are none.
+    pub(super) fn is_empty(&self) -> bool {
+        self.problems.is_empty()
+    }
+
     /// Counts a fault; whether it is still to be written out.
     fn count(&mut self, kind: usize, line: usize) -> bool {
         let (_, seen, last) = &mut self.seen[kind];

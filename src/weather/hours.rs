@@ -4,7 +4,7 @@ use std::sync::Arc;
 
 use chrono::DateTime;
 
-use super::clock::Instants;
+use super::clock::{ASIDE, Instants};
 use super::order::{Times, minutes};
 use super::rows::Rows;
 use super::values::Values;
@@ -91,25 +91,26 @@ pub(super) fn local(zone: Zone, instant_s: i64) -> String {
     }
 }
 
+/// The columns of a file on hours in a row.
+struct Placed {
+    start_s: i64,
+    values: Values,
+    line: Vec<u32>,
+    duplicate_hours: usize,
+}
+
 /// Puts the rows of a file on hours.
 ///
 /// # Errors
 /// Readings that are too far apart, or stamps that are spread over far more time than they can cover.
 pub(super) fn hours(
     place: &Place,
-    rows: &Rows,
-    mut values: Values,
+    rows: Rows,
+    values: Values,
     instants: Instants,
     findings: &mut Vec<Finding>,
 ) -> Result<Hours, Problem> {
-    let Instants {
-        begin_s,
-        step_s,
-        zone,
-        zone_known,
-        stitched,
-        called_typical,
-    } = instants;
+    let step_s = instants.step_s;
     if step_s > COARSEST_STEP_S {
         return Err(Problem::new(
             place.clone(),
@@ -121,11 +122,111 @@ pub(super) fn hours(
             "use an hourly file",
         ));
     }
+    let placed = if is_whole(&instants) {
+        Placed {
+            start_s: instants.begin_s.first().copied().unwrap_or(0),
+            values,
+            line: rows.line,
+            duplicate_hours: 0,
+        }
+    } else {
+        place_rows(place, &rows, &values, &instants, findings)?
+    };
+    let Placed {
+        start_s,
+        values,
+        line,
+        duplicate_hours,
+    } = placed;
+    let mut hours = Hours {
+        files: place
+            .file
+            .iter()
+            .map(|name| (0, Arc::clone(name)))
+            .collect(),
+        start_s,
+        outdoor_c: values.outdoor_c,
+        humidity: values.humidity,
+        dew_point_c: values.dew_point_c,
+        global_w_per_m2: values.global_w_per_m2,
+        wind_m_per_s: values.wind_m_per_s,
+        line,
+        zone: instants.zone,
+        zone_known: instants.zone_known,
+        stitched: instants.stitched,
+        called_typical: instants.called_typical,
+        duplicate_hours,
+        joined_hours: 0,
+    };
+    if step_s < HOUR_S {
+        findings.push(
+            Finding::new(
+                Severity::Note,
+                format!("the readings are {} apart", minutes(step_s)),
+                "averaged over each hour; an hour with less than half its readings counts as missing",
+            )
+            .at(place),
+        );
+    } else if step_s > HOUR_S {
+        let reach = usize::try_from((step_s + HOUR_S - 1) / HOUR_S).unwrap_or(1);
+        let before = present(&hours.outdoor_c);
+        for values in [
+            Some(&mut hours.outdoor_c),
+            hours.humidity.as_mut(),
+            hours.dew_point_c.as_mut(),
+            hours.global_w_per_m2.as_mut(),
+            hours.wind_m_per_s.as_mut(),
+        ]
+        .into_iter()
+        .flatten()
+        {
+            join(values, reach);
+        }
+        hours.joined_hours = present(&hours.outdoor_c) - before;
+        findings.push(
+            Finding::new(
+                Severity::Warning,
+                format!("the readings are {reach} hours apart"),
+                format!(
+                    "{} between them made by straight lines",
+                    count(hours.joined_hours, "hour")
+                ),
+            )
+            .at(place),
+        );
+    }
+    Ok(hours)
+}
+
+/// Whether the rows are hours in a row already, each on the hour, as in most files.
+fn is_whole(instants: &Instants) -> bool {
+    let begins = &instants.begin_s;
+    let on_the_hour = begins
+        .first()
+        .and_then(|&first| DateTime::from_timestamp(first, 0))
+        .is_some_and(|first| {
+            (first.timestamp() + i64::from(instants.zone.offset_s(first))).rem_euclid(HOUR_S) == 0
+        });
+    on_the_hour
+        && begins
+            .windows(2)
+            .all(|w| w[0] != ASIDE && w[1] == w[0] + HOUR_S)
+}
+
+/// Sorts the rows, drops what is there twice, and averages what falls into one hour.
+fn place_rows(
+    place: &Place,
+    rows: &Rows,
+    values: &Values,
+    instants: &Instants,
+    findings: &mut Vec<Finding>,
+) -> Result<Placed, Problem> {
+    let step_s = instants.step_s;
     let times = Times {
         place,
         line: &rows.line,
-        begin_s: &begin_s,
-        zone,
+        begin_s: &instants.begin_s,
+        zone: instants.zone,
     };
     let order = times.sorted(findings);
     let (Some(&first), Some(&last)) = (order.first(), order.last()) else {
@@ -166,73 +267,27 @@ pub(super) fn hours(
     } else {
         1.0
     };
-    let fill = |values: &mut Vec<f64>| averaged(&order, &hour, values, number, expected);
-    let mut hours = Hours {
-        files: place
-            .file
-            .iter()
-            .map(|name| (0, Arc::clone(name)))
-            .collect(),
-        start_s: base * HOUR_S - times.phase(first),
-        outdoor_c: fill(&mut values.outdoor_c),
-        humidity: values.humidity.as_mut().map(fill),
-        dew_point_c: values.dew_point_c.as_mut().map(fill),
-        global_w_per_m2: values.global_w_per_m2.as_mut().map(fill),
-        wind_m_per_s: values.wind_m_per_s.as_mut().map(fill),
-        line: vec![0; number],
-        zone,
-        zone_known,
-        stitched,
-        called_typical,
-        duplicate_hours: duplicates.len(),
-        joined_hours: 0,
-    };
+    let mean = |values: &Vec<f64>| averaged(&order, &hour, values, number, expected);
+    let mut line = vec![0; number];
     for (&row, &hour) in order.iter().zip(&hour).rev() {
-        if let (Some(line), Some(&of_row)) = (
-            hours.line.get_mut(hour as usize),
-            rows.line.get(row as usize),
-        ) {
+        if let (Some(line), Some(&of_row)) =
+            (line.get_mut(hour as usize), rows.line.get(row as usize))
+        {
             *line = of_row;
         }
     }
-    if step_s < HOUR_S {
-        findings.push(
-            Finding::new(
-                Severity::Note,
-                format!("the readings are {} apart", minutes(step_s)),
-                "averaged over each hour; an hour with less than half its readings counts as missing",
-            )
-            .at(place),
-        );
-    } else if step_s > HOUR_S {
-        let reach = usize::try_from((step_s + HOUR_S - 1) / HOUR_S).unwrap_or(1);
-        let before = present(&hours.outdoor_c);
-        for values in [
-            Some(&mut hours.outdoor_c),
-            hours.humidity.as_mut(),
-            hours.dew_point_c.as_mut(),
-            hours.global_w_per_m2.as_mut(),
-            hours.wind_m_per_s.as_mut(),
-        ]
-        .into_iter()
-        .flatten()
-        {
-            join(values, reach);
-        }
-        hours.joined_hours = present(&hours.outdoor_c) - before;
-        findings.push(
-            Finding::new(
-                Severity::Warning,
-                format!("the readings are {reach} hours apart"),
-                format!(
-                    "{} between them made by straight lines",
-                    count(hours.joined_hours, "hour")
-                ),
-            )
-            .at(place),
-        );
-    }
-    Ok(hours)
+    Ok(Placed {
+        start_s: base * HOUR_S - times.phase(first),
+        values: Values {
+            outdoor_c: mean(&values.outdoor_c),
+            humidity: values.humidity.as_ref().map(mean),
+            dew_point_c: values.dew_point_c.as_ref().map(mean),
+            global_w_per_m2: values.global_w_per_m2.as_ref().map(mean),
+            wind_m_per_s: values.wind_m_per_s.as_ref().map(mean),
+        },
+        line,
+        duplicate_hours: duplicates.len(),
+    })
 }
 
 fn present(values: &[f64]) -> usize {

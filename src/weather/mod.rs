@@ -13,6 +13,7 @@ mod columns;
 mod date_form;
 mod degree_days;
 mod describe;
+mod distribution;
 mod faults;
 mod heading;
 mod hours;
@@ -21,6 +22,7 @@ mod layout;
 mod number;
 mod options;
 mod order;
+mod pass;
 mod read;
 mod repair;
 mod row_reader;
@@ -138,17 +140,29 @@ impl Weather {
     /// The days of the series on the file's own clock, each with its hours; the first and last may be short.
     pub fn days(&self) -> Vec<(NaiveDate, Range<usize>)> {
         const DAY_S: i64 = 86_400;
-        let local = zone::local_hours(self.zone, self.axis.start, self.axis.hours);
+        let local_s = |i: usize| {
+            let instant = self.axis.at(i);
+            instant.timestamp() + i64::from(self.zone.offset_s(instant))
+        };
+        let mut days = Vec::with_capacity(self.axis.hours / 24 + 2);
         let mut from = 0;
-        local
-            .chunk_by(|a, b| a.div_euclid(DAY_S) == b.div_euclid(DAY_S))
-            .map(|hours| {
-                let date = DateTime::from_timestamp(hours[0], 0).map(|local| local.date_naive());
-                let day = (date.unwrap_or_default(), from..from + hours.len());
-                from += hours.len();
-                day
-            })
-            .collect()
+        while from < self.axis.hours {
+            let begin = local_s(from);
+            let day = begin.div_euclid(DAY_S);
+            // Where no clock changes the next day begins after the hours that are left; else it is looked for.
+            let left = ((day + 1) * DAY_S - begin + 3599) / 3600;
+            let mut to = from + usize::try_from(left).unwrap_or(24);
+            while to > from + 1 && local_s(to - 1).div_euclid(DAY_S) != day {
+                to -= 1;
+            }
+            while local_s(to).div_euclid(DAY_S) == day {
+                to += 1;
+            }
+            let date = DateTime::from_timestamp(day * DAY_S, 0).map(|local| local.date_naive());
+            days.push((date.unwrap_or_default(), from..to.min(self.axis.hours)));
+            from = to;
+        }
+        days
     }
 
     /// The beginning of an hour on the file's own clock, as text.

@@ -28,35 +28,61 @@ pub(super) enum Reading {
 /// Up to 15 digits without an exponent are read exactly as `str::parse` would: both parts of the quotient are exact, so
 /// one division rounds once. Everything else is left to `str::parse`.
 pub(super) fn read(field: &[u8], decimal_comma: bool, missing: &[Vec<u8>]) -> Reading {
-    let field = field.trim_ascii();
-    if !missing.is_empty() && missing.iter().any(|m| m.eq_ignore_ascii_case(field)) {
-        return Reading::Missing;
-    }
-    let point = if decimal_comma { b',' } else { b'.' };
-    let (negative, digits) = match field {
-        [b'-', rest @ ..] => (true, rest),
-        [b'+', rest @ ..] => (false, rest),
-        _ => (false, field),
-    };
-    let (mut whole, mut count, mut after_point, mut plain): (u64, usize, Option<usize>, bool) =
-        (0, 0, None, true);
-    for &byte in digits {
-        if byte.is_ascii_digit() && count < EXACT_DIGITS {
-            whole = whole * 10 + u64::from(byte - b'0');
-            count += 1;
-            after_point = after_point.map(|n| n + 1);
-        } else if byte == point && after_point.is_none() {
-            after_point = Some(0);
-        } else {
-            plain = false;
-            break;
+    if !missing.is_empty() {
+        let field = field.trim_ascii();
+        if missing
+            .iter()
+            .any(|marker| marker.eq_ignore_ascii_case(field))
+        {
+            return Reading::Missing;
         }
     }
-    if plain && count > 0 {
-        let number = whole as f64 / TENS[after_point.unwrap_or(0).min(EXACT_DIGITS)];
-        return Reading::Number(if negative { -number } else { number });
+    match plain(field, if decimal_comma { b',' } else { b'.' }) {
+        Some(number) => Reading::Number(number),
+        None => slow(field.trim_ascii(), decimal_comma),
     }
-    slow(field, decimal_comma)
+}
+
+/// Reads nothing but a sign, digits and a point.
+fn plain(field: &[u8], point: u8) -> Option<f64> {
+    let (negative, digits) = match field {
+        [b'-', rest @ ..] => (true, rest),
+        _ => (false, field),
+    };
+    let (whole, before) = run(0, digits);
+    let (whole, after) = match digits.get(before) {
+        None => (whole, 0),
+        Some(&byte) if byte == point => {
+            let (whole, after) = run(whole, &digits[before + 1..]);
+            if before + 1 + after < digits.len() {
+                return None;
+            }
+            (whole, after)
+        }
+        Some(_) => return None,
+    };
+    if !(1..=EXACT_DIGITS).contains(&(before + after)) {
+        return None;
+    }
+    let number = if after == 0 {
+        whole as f64
+    } else {
+        whole as f64 / TENS[after]
+    };
+    Some(if negative { -number } else { number })
+}
+
+/// The digits at the front, appended to a whole number, and how many they are; the number is wrong when they are too many.
+fn run(whole: u64, text: &[u8]) -> (u64, usize) {
+    let mut whole = whole;
+    for (at, byte) in text.iter().enumerate() {
+        let digit = byte.wrapping_sub(b'0');
+        if digit > 9 {
+            return (whole, at);
+        }
+        whole = whole.wrapping_mul(10).wrapping_add(u64::from(digit));
+    }
+    (whole, text.len())
 }
 
 #[cold]

@@ -102,11 +102,16 @@ fn on_hours(
 ) -> Result<Hours, Problems> {
     let place = Place::file(Arc::clone(name));
     let text = bytes::text(name, bytes, options, findings)?;
+    let text = if text.contains('\n') {
+        text
+    } else {
+        text.replace('\r', "\n").into()
+    };
     let layout = layout::layout(name, &text, options, findings)?;
     let mut rows = rows::rows(name, &text, &layout, options, findings)?;
     let values = values::values(&place, &mut rows, &layout, options, findings)?;
     let instants = clock::instants(&place, &mut rows, &layout, options, findings);
-    Ok(hours::hours(&place, &rows, values, instants, findings)?)
+    Ok(hours::hours(&place, rows, values, instants, findings)?)
 }
 
 /// Whether a file belongs to the stretch before it.

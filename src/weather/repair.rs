@@ -128,6 +128,9 @@ fn by_line(values: &[f64], from: usize, to: usize, policy: RepairPolicy) -> bool
 }
 
 fn fill(values: &mut [f64], gaps: &[(usize, usize)], policy: RepairPolicy) {
+    if gaps.is_empty() {
+        return;
+    }
     let before = values.to_vec();
     for &(from, to) in gaps {
         if by_line(&before, from, to, policy) {

@@ -62,17 +62,8 @@ pub(super) trait EachRow {
     fn row(&mut self, line: usize, row: &impl Fields);
 }
 
-/// Hands every row from the first reading on to `each`.
-pub(super) fn for_each_row(text: &str, layout: &Layout, each: &mut impl EachRow) {
-    let body = text.as_bytes().get(layout.start..).unwrap_or_default();
-    if body.contains(&b'"') {
-        quoted(body, layout, each);
-    } else {
-        plain(body, layout, each);
-    }
-}
-
-fn plain(body: &[u8], layout: &Layout, each: &mut impl EachRow) {
+/// Hands every row of a text without quotation marks to `each`, and tells how many lines there were.
+pub(super) fn plain(body: &[u8], layout: &Layout, each: &mut impl EachRow) -> usize {
     let mut ends = Vec::with_capacity(layout.fields + 1);
     let mut line = layout.line;
     let mut rest = body;
@@ -102,9 +93,11 @@ fn plain(body: &[u8], layout: &Layout, each: &mut impl EachRow) {
         line += 1;
         rest = rest.get(length + 1..).unwrap_or_default();
     }
+    line - layout.line
 }
 
-fn quoted(body: &[u8], layout: &Layout, each: &mut impl EachRow) {
+/// Hands every row of any text to `each`.
+pub(super) fn quoted(body: &[u8], layout: &Layout, each: &mut impl EachRow) {
     let mut reader = reader(body, layout.delimiter);
     let mut record = csv::ByteRecord::new();
     // Reading from memory cannot fail and rows may be of any length, so an error is the end.

@@ -2,12 +2,11 @@
 
 use std::sync::Arc;
 
-use super::date_form::{self, Decision, SAMPLED_ROWS, TimeForm};
-use super::faults::Faults;
+use super::date_form::{self, Decision, FIRST_ROWS, SAMPLED_ROWS};
 use super::layout::Layout;
-use super::number::{self, Reading};
 use super::options::ReadOptions;
-use super::row_reader::{self, EachRow, Fields};
+use super::pass::{self, How};
+use super::row_reader;
 use super::time_stamp::Stamp;
 use super::words::shorten;
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
@@ -31,7 +30,7 @@ pub(super) struct Rows {
 
 impl Rows {
     /// Takes down the time of the next row.
-    fn put(&mut self, stamp: Stamp) {
+    pub(super) fn put(&mut self, stamp: Stamp) {
         let row = self.local_s.len();
         self.local_s.push(stamp.local_s);
         if stamp.offset_s.is_some() || !self.offset_s.is_empty() {
@@ -40,6 +39,32 @@ impl Rows {
         }
         if stamp.twenty_four && self.twenty_four.is_none() {
             self.twenty_four = Some(row);
+        }
+    }
+
+    /// Appends the rows of a later piece of the text, which begins after `lines` lines.
+    pub(super) fn append(&mut self, mut next: Self, lines: usize) {
+        let rows = self.local_s.len();
+        let lines = u32::try_from(lines).unwrap_or(u32::MAX);
+        self.line
+            .extend(next.line.iter().map(|line| line.saturating_add(lines)));
+        self.local_s.append(&mut next.local_s);
+        if !(self.offset_s.is_empty() && next.offset_s.is_empty()) {
+            self.offset_s.resize(rows, None);
+            self.offset_s.append(&mut next.offset_s);
+            self.offset_s.resize(self.local_s.len(), None);
+        }
+        self.twenty_four = self.twenty_four.or(next.twenty_four.map(|row| row + rows));
+        self.temperature.append(&mut next.temperature);
+        for (values, next) in [
+            (&mut self.humidity, next.humidity),
+            (&mut self.dew_point, next.dew_point),
+            (&mut self.radiation, next.radiation),
+            (&mut self.wind, next.wind),
+        ] {
+            if let (Some(values), Some(mut next)) = (values.as_mut(), next) {
+                values.append(&mut next);
+            }
         }
     }
 }
@@ -57,11 +82,16 @@ pub(super) fn rows(
     findings: &mut Vec<Finding>,
 ) -> Result<Rows, Problems> {
     let place = Place::file(Arc::clone(name));
-    let sample = row_reader::sample(text, layout, SAMPLED_ROWS);
+    let mut sample = row_reader::sample(text, layout, FIRST_ROWS);
+    let mut decision = date_form::decide(&sample, &layout.columns, options);
+    if decision.is_none_or(|decision| decision.form.day_and_month_may_be_swapped()) {
+        sample = row_reader::sample(text, layout, SAMPLED_ROWS);
+        decision = date_form::decide(&sample, &layout.columns, options);
+    }
     let Some(Decision {
         form,
         order_guessed,
-    }) = date_form::decide(&sample, &layout.columns, options)
+    }) = decision
     else {
         return Err(no_time(&place, layout, &sample).into());
     };
@@ -75,16 +105,7 @@ pub(super) fn rows(
             .at(&place.clone().at_line(layout.line)),
         );
     }
-    let columns = &layout.columns;
-    // Room for what rows of this length make, with a little over; a wrong guess costs a copy.
-    let row_bytes = sample
-        .iter()
-        .map(|row| row.as_slice().len() + row.len())
-        .sum::<usize>()
-        / sample.len().max(1);
-    let expected = text.len() / row_bytes.max(4) * 17 / 16 + 16;
-    let column = |wanted: bool| wanted.then(|| Vec::with_capacity(expected));
-    let mut pass = Pass {
+    let how = How {
         layout,
         form,
         decimal_comma: options
@@ -95,86 +116,19 @@ pub(super) fn rows(
             .iter()
             .map(|m| m.trim().as_bytes().to_vec())
             .collect(),
-        needed: form.columns.last().max(columns.temperature.at) + 1,
-        rows: Rows {
-            line: Vec::with_capacity(expected),
-            local_s: Vec::with_capacity(expected),
-            offset_s: Vec::new(),
-            twenty_four: None,
-            temperature: Vec::with_capacity(expected),
-            humidity: column(columns.humidity.is_some()),
-            dew_point: column(columns.dew_point.is_some()),
-            radiation: column(columns.radiation.is_some()),
-            wind: column(columns.wind.is_some()),
-        },
-        faults: Faults::new(place),
+        needed: form.columns.last().max(layout.columns.temperature.at) + 1,
+        row_bytes: sample
+            .iter()
+            .map(|row| row.as_slice().len() + row.len())
+            .sum::<usize>()
+            / sample.len().max(1),
     };
-    row_reader::for_each_row(text, layout, &mut pass);
-    pass.faults.finish(pass.rows)
-}
-
-/// The pass over the rows.
-struct Pass<'a> {
-    layout: &'a Layout,
-    form: TimeForm,
-    decimal_comma: bool,
-    missing: Vec<Vec<u8>>,
-    /// Fields a row must have.
-    needed: usize,
-    rows: Rows,
-    faults: Faults,
-}
-
-impl EachRow for Pass<'_> {
-    fn row(&mut self, line: usize, row: &impl Fields) {
-        let (layout, columns) = (self.layout, &self.layout.columns);
-        let number = row.number();
-        if number < self.needed {
-            self.faults.short(line, row, self.needed, layout);
-            return;
-        }
-        let beyond = || (layout.fields..number).filter_map(|at| row.field(at));
-        if number > layout.fields && beyond().any(|field| !field.trim_ascii().is_empty()) {
-            self.faults.long(line, row, layout, self.decimal_comma);
-            return;
-        }
-        let Some(stamp) = self.form.stamp(row) else {
-            self.faults.time(line, &self.form, row, layout);
-            return;
-        };
-        let read = |at: usize| match row.field(at) {
-            Some(field) => number::read(field, self.decimal_comma, &self.missing),
-            None => Reading::Missing,
-        };
-        let temperature = match read(columns.temperature.at) {
-            Reading::Number(number) => number,
-            Reading::Missing => f64::NAN,
-            Reading::Other => {
-                let field = row.field(columns.temperature.at).unwrap_or_default();
-                self.faults
-                    .temperature(line, &String::from_utf8_lossy(field), layout);
-                return;
-            }
-        };
-        let rows = &mut self.rows;
-        for (values, column) in [
-            (&mut rows.humidity, &columns.humidity),
-            (&mut rows.dew_point, &columns.dew_point),
-            (&mut rows.radiation, &columns.radiation),
-            (&mut rows.wind, &columns.wind),
-        ] {
-            if let (Some(values), Some(column)) = (values, column) {
-                values.push(match read(column.at) {
-                    Reading::Number(number) => number,
-                    // A word in a column that is not needed is as good as nothing there.
-                    Reading::Missing | Reading::Other => f64::NAN,
-                });
-            }
-        }
-        rows.line.push(u32::try_from(line).unwrap_or(u32::MAX));
-        rows.put(stamp);
-        rows.temperature.push(temperature);
-    }
+    let (rows, faults) = pass::over(
+        text.as_bytes().get(layout.start..).unwrap_or_default(),
+        &how,
+        &place,
+    );
+    faults.finish(rows)
 }
 
 fn has_decimal_comma(sample: &[csv::ByteRecord], layout: &Layout) -> bool {

@@ -26,7 +26,7 @@ const WIND_M_PER_S: Bound = Bound {
     high: 75.0,
     unit: "m/s",
 };
-/// Pressure unit factors: kJ and the like per hour as mean W.
+/// Watt-hours in a kilojoule: an hour's kJ/m² as mean W/m².
 const WH_PER_KJ: f64 = 1.0 / 3.6;
 
 /// The readings of a file in °C, shares, W/m² and m/s. Missing is `NaN`.
@@ -298,15 +298,15 @@ fn humidity(
     column: &ValueColumn,
     note: &mut impl FnMut(String, &str),
 ) -> Vec<f64> {
-    let greatest = values
-        .iter()
-        .copied()
-        .filter(|x| x.is_finite() && *x <= SATURATED_PERCENT)
-        .fold(0.0, f64::max);
     let fraction = match column.unit.as_str() {
         "%" | "percent" | "pct" => false,
         "-" | "1" | "0-1" | "0..1" | "0–1" | "fraction" => true,
         _ => {
+            let greatest = values
+                .iter()
+                .copied()
+                .filter(|x| x.is_finite() && *x <= SATURATED_PERCENT)
+                .fold(0.0, f64::max);
             let fraction = greatest <= 1.05;
             if fraction {
                 note(

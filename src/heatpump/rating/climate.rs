@@ -77,6 +77,12 @@ const WARMER: [u16; 14] = [
 ];
 
 impl Climate {
+    /// Its word.
+    pub fn word(self) -> &'static str {
+        let held = Self::WORDS.iter().find(|(_, value)| *value == self);
+        held.map_or("", |(word, _)| word)
+    }
+
     /// Every climate.
     pub const ALL: [Self; 3] = [Self::Average, Self::Colder, Self::Warmer];
 
@@ -146,6 +152,12 @@ impl Climate {
 type Curve = &'static [(f64, f64)];
 
 impl Application {
+    /// Its word.
+    pub fn word(self) -> &'static str {
+        let held = Self::WORDS.iter().find(|(_, value)| *value == self);
+        held.map_or("", |(word, _)| word)
+    }
+
     /// Every application.
     pub const ALL: [Self; 4] = [Self::Low, Self::Intermediate, Self::Medium, Self::High];
 

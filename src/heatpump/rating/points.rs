@@ -4,7 +4,7 @@ use std::fmt;
 
 use super::bins::{Rating, RatingCase, RatingPoint, rate};
 use super::climate::{Application, Climate};
-use crate::heatpump::deliver::{ColdSide, Duty};
+use crate::heatpump::duty::{ColdSide, Duty};
 use crate::heatpump::heat_pump::HeatPump;
 use crate::heatpump::sheet::{Sheet, SourceKind, default_spread_k};
 use crate::problem::{Finding, Severity};

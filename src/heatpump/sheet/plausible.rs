@@ -130,7 +130,7 @@ fn check_limits(
             &span_of(&raw.flow, section),
             format!("tested at flow {} °C", point.flow_c),
             format!(
-                "the limits of this sheet: at most {} °C at source {} °C",
+                "the limits of this sheet: at most {:.1} °C at source {} °C",
                 limits.highest_flow_at(point.source_c),
                 point.source_c
             ),

@@ -1,0 +1,192 @@
+//! Making a map: solve on coarse nodes, refine to the fine table.
+
+use super::{Axis, Input, Map, Range};
+use crate::heatpump::compressor::Speeds;
+use crate::heatpump::correction::FittedMachine;
+use crate::heatpump::limits::{LEAST_DIFFERENCE_K, LOWEST_FLOW_C, Limits};
+use crate::heatpump::machine::SolveError;
+
+/// Fine step in flow temperature, K, at most.
+const FLOW_STEP_K: f64 = 1.5;
+/// Fine steps from least to greatest output.
+const FRACTION_STEPS: usize = 24;
+/// Coarse Chebyshev nodes in flow temperature and in fraction.
+const FLOW_NODES: usize = 11;
+const FRACTION_NODES: usize = 9;
+/// How far below the least difference of flow and source the map goes, so that no look-up meets an edge, K.
+const EDGE_K: f64 = 4.0;
+
+impl Map {
+    /// Solves the machine over its limits.
+    ///
+    /// # Errors
+    /// [`SolveError`] where the machine cannot run inside its limits.
+    pub fn build(machine: &FittedMachine, limits: &Limits) -> Result<Self, SolveError> {
+        let source = Axis {
+            low: limits.lowest_source_c.floor(),
+            step: 1.0,
+            count: (limits.highest_source_c.ceil() - limits.lowest_source_c.floor()) as usize + 1,
+        };
+        let span = (limits.highest_flow_anywhere() - LOWEST_FLOW_C).max(1.0);
+        let steps = (span / FLOW_STEP_K).ceil();
+        let flow = Axis {
+            low: LOWEST_FLOW_C,
+            step: span / steps,
+            count: steps as usize + 1,
+        };
+        let variable = machine.machine.speeds != Speeds::Fixed;
+        let fraction = Axis {
+            low: 0.0,
+            step: 1.0 / FRACTION_STEPS as f64,
+            count: if variable { FRACTION_STEPS + 1 } else { 1 },
+        };
+        let mut map = Self {
+            source,
+            flow,
+            fraction,
+            ranges: Vec::with_capacity(source.count * flow.count),
+            inputs: Vec::with_capacity(source.count * flow.count * fraction.count),
+        };
+        let coarse_fractions = chebyshev(0.0, 1.0, if variable { FRACTION_NODES } else { 1 });
+        let fraction_weights: Vec<_> = (0..fraction.count)
+            .map(|i| {
+                weights(
+                    &coarse_fractions,
+                    if variable { fraction.node(i) } else { 1.0 },
+                )
+            })
+            .collect();
+        for i in 0..source.count {
+            map.add_row(
+                machine,
+                limits,
+                source.node(i),
+                &coarse_fractions,
+                &fraction_weights,
+            )?;
+        }
+        Ok(map)
+    }
+
+    /// One source temperature: solve coarse, refine.
+    fn add_row(
+        &mut self,
+        machine: &FittedMachine,
+        limits: &Limits,
+        source_c: f64,
+        fractions: &[f64],
+        fraction_weights: &[Vec<f64>],
+    ) -> Result<(), SolveError> {
+        let (low, high) = flows_of_row(limits, source_c, &self.flow);
+        let flows = chebyshev(low, high, FLOW_NODES);
+        let mut greatest = Vec::with_capacity(flows.len());
+        let mut least = Vec::with_capacity(flows.len());
+        let mut inputs = Vec::with_capacity(flows.len() * fractions.len());
+        for &flow_c in &flows {
+            let most = machine.greatest_kw(source_c, flow_c)?;
+            let few = machine.least_kw(source_c, flow_c)?;
+            greatest.push(most);
+            least.push(few);
+            let fastest = machine.machine.speeds.greatest(source_c, flow_c);
+            for fraction in fractions {
+                let heat_kw = few + fraction * (most - few);
+                let operation = machine.at_output(source_c, flow_c, heat_kw)?;
+                inputs.push((
+                    operation.electric_kw() / operation.heat_kw,
+                    operation.speed / fastest,
+                ));
+            }
+        }
+        for j in 0..self.flow.count {
+            let along = weights(&flows, self.flow.node(j).clamp(low, high));
+            let dot = |values: &[f64]| along.iter().zip(values).map(|(w, v)| w * v).sum();
+            self.ranges.push(Range {
+                greatest_kw: dot(&greatest),
+                least_kw: dot(&least),
+            });
+            for across in fraction_weights {
+                let (mut electric, mut speed) = (0.0, 0.0);
+                for (row, w) in inputs.chunks_exact(fractions.len()).zip(&along) {
+                    for ((e, s), v) in row.iter().zip(across) {
+                        electric += w * v * e;
+                        speed += w * v * s;
+                    }
+                }
+                self.inputs.push(Input {
+                    electric_per_heat: electric,
+                    speed_share: speed,
+                });
+            }
+        }
+        Ok(())
+    }
+}
+
+/// Flow temperatures between which a row is solved: what its own and its neighbours' cells can be asked for. Outside it the
+/// nodes hold its edge.
+fn flows_of_row(limits: &Limits, source_c: f64, flow: &Axis) -> (f64, f64) {
+    let low = (source_c + LEAST_DIFFERENCE_K - EDGE_K).max(flow.low);
+    let wanted = [-1.0, 0.0, 1.0]
+        .map(|step| limits.highest_flow_at(source_c + step))
+        .into_iter()
+        .fold(low, f64::max);
+    // Up to the node at or above the highest flow, which every cell below it uses.
+    let high = flow.low + ((wanted - flow.low) / flow.step - 1e-9).ceil() * flow.step;
+    (low, high.max(low + flow.step))
+}
+
+/// Chebyshev points of the second kind from low to high; the middle for one, the top for a machine of one fraction.
+fn chebyshev(low: f64, high: f64, count: usize) -> Vec<f64> {
+    if count < 2 {
+        return vec![high];
+    }
+    (0..count)
+        .map(|i| {
+            let angle = std::f64::consts::PI * i as f64 / (count - 1) as f64;
+            low + (high - low) * 0.5 * (1.0 - angle.cos())
+        })
+        .collect()
+}
+
+/// Weights of the polynomial through values at Chebyshev points, by the barycentric formula (Berrut and Trefethen 2004).
+fn weights(nodes: &[f64], at: f64) -> Vec<f64> {
+    let last = nodes.len() - 1;
+    if let Some(hit) = nodes.iter().position(|node| *node == at) {
+        let mut unit = vec![0.0; nodes.len()];
+        unit[hit] = 1.0;
+        return unit;
+    }
+    let mut parts: Vec<f64> = nodes
+        .iter()
+        .enumerate()
+        .map(|(i, node)| {
+            let sign = if i % 2 == 0 { 1.0 } else { -1.0 };
+            let end = if i == 0 || i == last { 0.5 } else { 1.0 };
+            sign * end / (at - node)
+        })
+        .collect();
+    let sum: f64 = parts.iter().sum();
+    for part in &mut parts {
+        *part /= sum;
+    }
+    parts
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn barycentric_weights_reproduce_a_polynomial() {
+        let nodes = chebyshev(20.0, 70.0, FLOW_NODES);
+        let cubic = |x: f64| 1.0 + 0.1 * x - 0.002 * x * x + 1e-5 * x * x * x;
+        for at in [20.0, 33.3, 47.0, 70.0] {
+            let found: f64 = weights(&nodes, at)
+                .iter()
+                .zip(&nodes)
+                .map(|(w, x)| w * cubic(*x))
+                .sum();
+            assert!((found - cubic(at)).abs() < 1e-11, "{at}");
+        }
+    }
+}

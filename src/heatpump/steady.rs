@@ -1,0 +1,185 @@
+//! The machine running steadily by its map, in balance with frost and with what the source offers.
+
+use super::duty::ColdSide;
+use super::frost::{FrostLoss, humidity_ratio};
+use super::heat_pump::HeatPump;
+use super::limits::LEAST_DIFFERENCE_K;
+use super::sheet::SourceKind;
+
+/// Change of output below which the frost substitution ends, relative, and the most substitutions; two or three are usual.
+const FROST_TOLERANCE: f64 = 1e-7;
+const MOST_FROST_STEPS: usize = 12;
+/// Error of the source temperature at which the balance with the offer ends, K.
+const DRAW_TOLERANCE_K: f64 = 1e-6;
+/// Most steps of that balance: the last half of them halve the bracket, which is enough from any bracket in use.
+const MOST_DRAW_STEPS: usize = 80;
+/// Outdoor temperature above which no coil freezes, °C: it would take an approach of 25 K.
+const FROST_FREE_C: f64 = 15.0;
+/// At what output the machine is asked to run.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) enum Wanted {
+    Greatest,
+    Least,
+    /// A net output, kW, held between the two.
+    Net(f64),
+}
+
+/// The machine running steadily by the map, at the sheet's own size.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Steady {
+    /// Source temperature entering, °C.
+    pub source_c: f64,
+    /// Output before frost, kW.
+    pub gross_kw: f64,
+    /// Frost-free electricity at that output, kW.
+    pub electric_kw: f64,
+    /// Fan or pump in it, kW.
+    pub source_side_kw: f64,
+    /// Heat from the source, kW.
+    pub extracted_kw: f64,
+    /// Speed as a share of the greatest.
+    pub speed_share: f64,
+    /// Frost.
+    pub loss: FrostLoss,
+}
+
+impl Steady {
+    /// Output that reaches the house, kW.
+    pub fn net_kw(&self) -> f64 {
+        self.gross_kw * (1.0 - self.loss.output)
+    }
+}
+
+impl HeatPump {
+    /// Humidity ratio of the outdoor air, or 0 where there is no outdoor coil.
+    pub(super) fn moisture(&self, cold: &ColdSide) -> f64 {
+        match self.core.source {
+            // Above this no coil is near freezing.
+            SourceKind::Air if cold.open_c > FROST_FREE_C => 0.0,
+            SourceKind::Air => humidity_ratio(cold.open_c, cold.relative_humidity),
+            SourceKind::Brine | SourceKind::Water => 0.0,
+        }
+    }
+
+    /// The machine in balance with what the source offers.
+    ///
+    /// Finds the entering temperature that is the open one less what the heat drawn there costs. The heat drawn is continuous
+    /// and bounded, so a bracket always exists; false position (Illinois) with bisection always ends.
+    pub(super) fn steady(
+        &self,
+        cold: &ColdSide,
+        flow_c: f64,
+        wanted: Wanted,
+        moisture: f64,
+    ) -> Steady {
+        let at = |source_c: f64| self.steady_at(source_c, flow_c, wanted, moisture);
+        let open = at(cold.open_c);
+        // An offer is made in kelvin per kilowatt of the real machine.
+        let k_per_kw = cold.k_per_kw * self.scale;
+        if k_per_kw == 0.0 {
+            return open;
+        }
+        let excess =
+            |steady: &Steady| steady.source_c + k_per_kw * steady.extracted_kw - cold.open_c;
+        let (mut high, mut high_excess) = (cold.open_c, excess(&open));
+        let mut width = high_excess.max(DRAW_TOLERANCE_K);
+        let mut low = high - width;
+        let mut steady = at(low);
+        let mut low_excess = excess(&steady);
+        for _ in 0..MOST_DRAW_STEPS {
+            if low_excess <= 0.0 {
+                break;
+            }
+            width *= 2.0;
+            low = high - width;
+            steady = at(low);
+            low_excess = excess(&steady);
+        }
+        // The end that stays twice is weighted down (Illinois), so that both ends move.
+        let mut stayed = 0;
+        for step in 0..MOST_DRAW_STEPS {
+            if excess(&steady).abs() < DRAW_TOLERANCE_K || high - low < DRAW_TOLERANCE_K {
+                break;
+            }
+            let middle = if step > MOST_DRAW_STEPS / 2 {
+                0.5 * (low + high)
+            } else {
+                (low * high_excess - high * low_excess) / (high_excess - low_excess)
+            };
+            steady = at(middle);
+            let found = excess(&steady);
+            if found > 0.0 {
+                (high, high_excess) = (middle, found);
+                if stayed == 1 {
+                    low_excess *= 0.5;
+                }
+                stayed = 1;
+            } else {
+                (low, low_excess) = (middle, found);
+                if stayed == -1 {
+                    high_excess *= 0.5;
+                }
+                stayed = -1;
+            }
+        }
+        steady
+    }
+
+    /// The machine at an entering source temperature, by the map.
+    fn steady_at(&self, source_c: f64, flow_c: f64, wanted: Wanted, moisture: f64) -> Steady {
+        let core = &*self.core;
+        let machine = &core.machine.machine;
+        let lookup_c = source_c.min(flow_c - LEAST_DIFFERENCE_K);
+        let range = core.map.range(lookup_c, flow_c);
+        let greatest_kw = core
+            .limits
+            .greatest_output_kw
+            .map_or(range.greatest_kw, |cap| range.greatest_kw.min(cap));
+        let least_kw = range.least_kw.min(greatest_kw);
+        let width = range.greatest_kw - range.least_kw;
+        let at_output = |gross_kw: f64| {
+            let fraction = if width > 0.0 {
+                (gross_kw - range.least_kw) / width
+            } else {
+                1.0
+            };
+            let input = core.map.input(lookup_c, flow_c, fraction);
+            let electric_kw = gross_kw * input.electric_per_heat;
+            let source_side_kw = machine.source_side_kw(input.speed_share);
+            let work_kw = (electric_kw - source_side_kw) * machine.compressor.drive_efficiency;
+            let extracted_kw = gross_kw - work_kw;
+            let loss = if moisture > 0.0 {
+                let evaporating_c = lookup_c - machine.evaporator.approach_k(extracted_kw);
+                core.frost.loss(source_c, evaporating_c, moisture)
+            } else {
+                FrostLoss::default()
+            };
+            Steady {
+                source_c,
+                gross_kw,
+                electric_kw,
+                source_side_kw,
+                extracted_kw,
+                speed_share: input.speed_share,
+                loss,
+            }
+        };
+        match wanted {
+            Wanted::Greatest => at_output(greatest_kw),
+            Wanted::Least => at_output(least_kw),
+            Wanted::Net(net_kw) => {
+                let mut steady = at_output(net_kw.clamp(least_kw, greatest_kw));
+                for _ in 0..MOST_FROST_STEPS {
+                    let gross_kw =
+                        (net_kw / (1.0 - steady.loss.output)).clamp(least_kw, greatest_kw);
+                    let change = (gross_kw / steady.gross_kw - 1.0).abs();
+                    if change < FROST_TOLERANCE {
+                        break;
+                    }
+                    steady = at_output(gross_kw);
+                }
+                steady
+            }
+        }
+    }
+}
