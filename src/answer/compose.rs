@@ -9,7 +9,6 @@ use crate::problem::{Finding, Problems, Severity};
 use crate::study::{
     BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even,
 };
-use crate::year::Heating;
 
 /// What an estimate tells beside the figures of its case.
 #[derive(Debug, Clone, Default)]
@@ -95,16 +94,17 @@ fn system(
     machine: Option<String>,
 ) -> SystemAnswer {
     let sums = outcome.mean_sums();
-    let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
-    let burns_fuel = matches!(contender.system.heating, Heating::Boiler { .. });
-    let balance = |with_hot_water| match &contender.system.heating {
-        Heating::HeatPump(machine) => balance_point(
+    let heating = &contender.system.heating;
+    let is_machine = heating.machine().is_some();
+    let burns_fuel = heating.boiler().is_some();
+    let balance = |with_hot_water| {
+        let machine = heating.machine()?;
+        balance_point(
             &contender.system,
             machine,
             contender.indoor_c,
             with_hot_water,
-        ),
-        _ => None,
+        )
     };
     let balance_points = (balance(false), balance(true));
     let today = &all[0];

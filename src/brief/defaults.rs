@@ -54,5 +54,17 @@ defaults! {
     LOOP_DEPTH = "choice.loop_depth", "1.2 m", "common practice, no source";
     SOIL_DIFFUSIVITY = "choice.soil_diffusivity", "5e-7 m²/s", "moist loam: common practice, no source";
     BOILER_OUTPUT = "today.output", "24 kW", "common practice, no source";
+    PELLET_EFFICIENCY = "today.efficiency", "75 % gross",
+        "of a pellet boiler: default of SAP table 4a for automatic feed (from memory)";
+    HOUSEHOLD_SHAPE = "household.shape", "least at night, most at 18:00",
+        "common practice, no source";
+    HYBRID_FUEL = "choice.boiler.fuel", "gas", "common practice, no source";
+    ROOMS_ABOVE = "choice.shifting.rooms_above", "1 K", "a choice of ours: hardly noticed";
+    ROOMS_BELOW = "choice.shifting.rooms_below", "0 K", "so that a saving is not bought with cold rooms";
+    STORE_ABOVE = "choice.shifting.store_above", "5 K", "common practice, no source";
+    STORE_BELOW = "choice.shifting.store_below", "0 K", "so that a saving is not bought with cool water";
+    LEAKAGE = "choice.leakage", "1 %", "of the charge a year: common practice, no source";
+    LEAKAGE_AT_END = "choice.leakage_at_end", "10 %", "of the charge: common practice, no source";
+    LEAKAGE_LIFE = "years over which the leakage at the end is spread", "15 years", "common practice, no source";
     BACKUP_BAND = "backup starts below the set point by", "0.5 K", "common practice, no source";
 }

@@ -103,6 +103,9 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     let mut findings = weather
         .as_ref()
         .map_or_else(Vec::new, |weather| weather.findings.clone());
+    if let Some(energy) = &energy {
+        findings.extend(energy.supplies().flat_map(|supply| supply.findings.clone()));
+    }
     if let Some(home) = &raw.home {
         let systems = raw.today.iter().map(|today| (today, true));
         for (table, today) in systems.chain(raw.choice.iter().map(|choice| (choice, false))) {

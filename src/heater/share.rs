@@ -72,7 +72,10 @@ mod tests {
             cost: 0.25,
             carbon_kg: 0.9,
         };
-        assert_eq!(HybridRule::ByCost.decide(5.0, machine, boiler), Side::Boiler);
+        assert_eq!(
+            HybridRule::ByCost.decide(5.0, machine, boiler),
+            Side::Boiler
+        );
         assert_eq!(
             HybridRule::ByCarbon.decide(5.0, machine, boiler),
             Side::Machine
@@ -80,6 +83,9 @@ mod tests {
         let cold = HybridRule::ByOutdoor { below_c: 2.0 };
         assert_eq!(cold.decide(1.9, machine, boiler), Side::Boiler);
         assert_eq!(cold.decide(2.0, machine, boiler), Side::Machine);
-        assert_eq!(HybridRule::ByCost.decide(0.0, machine, machine), Side::Machine);
+        assert_eq!(
+            HybridRule::ByCost.decide(0.0, machine, machine),
+            Side::Machine
+        );
     }
 }

@@ -3,7 +3,7 @@
 use argmin::core::{CostFunction, Error, Executor, State as _};
 use argmin::solver::brent::BrentRoot;
 
-use super::case::Case;
+use super::case::{Case, Contender};
 use super::lever::Lever;
 use super::outcome::{Outcome, price};
 use crate::problem::Problems;
@@ -54,7 +54,8 @@ impl Dearer<'_> {
             ..self.case.clone()
         };
         self.lever.apply(value, &mut pair, 1)?;
-        if self.lever.moves_only_prices() {
+        let by_price = |contender: &Contender| contender.system.heating.follows_prices();
+        if self.lever.moves_only_prices() && !pair.contenders.iter().any(by_price) {
             let cost = |contender: usize, outcome: &Outcome| {
                 let fuel = outcome.fuel.as_ref();
                 let years = &pair.site.years;

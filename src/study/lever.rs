@@ -5,7 +5,7 @@ use std::sync::Arc;
 use super::case::{Account, Case};
 use crate::bounds::Bound;
 use crate::problem::Problems;
-use crate::year::Heating;
+use crate::units::Fuel;
 
 /// One quantity that can be moved, everything else staying as it is.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -55,8 +55,9 @@ impl Lever {
         match (self, &contender.system.heating) {
             (Self::ElectricityRate | Self::FuelRate | Self::HeatLoss, _) => Some(1.0),
             (Self::FlowTemperature, _) => Some(contender.system.home.emitters.design_flow_c()),
-            (Self::FieldFactor, Heating::HeatPump(system)) => Some(system.machine.field_factor()),
-            (Self::FieldFactor, _) => None,
+            (Self::FieldFactor, heating) => heating
+                .machine()
+                .map(|system| system.machine.field_factor()),
         }
     }
 
@@ -74,6 +75,11 @@ impl Lever {
             Self::ElectricityRate => {
                 for contender in &mut case.contenders {
                     contender.electricity = scaled(&contender.electricity, value);
+                    for beside in &mut contender.beside {
+                        if beside.account.tariff.fuel == Fuel::Electricity {
+                            beside.account = scaled(&beside.account, value);
+                        }
+                    }
                     for price in &mut contender.plan.electricity.price {
                         *price *= value;
                     }
@@ -106,7 +112,7 @@ impl Lever {
             }
             Self::FieldFactor => {
                 if let Some(contender) = case.contenders.get_mut(choice)
-                    && let Heating::HeatPump(system) = &mut contender.system.heating
+                    && let Some(system) = contender.system.heating.machine_mut()
                 {
                     system.machine = system.machine.with_field_factor(value);
                 }
@@ -122,6 +128,6 @@ impl Lever {
 fn scaled(account: &Account, factor: f64) -> Account {
     Account {
         tariff: Arc::new(account.tariff.with_energy_times(factor)),
-        meter: Arc::clone(&account.meter),
+        ..account.clone()
     }
 }

@@ -58,7 +58,13 @@ fn by_machine_hour<P: Probe>(
 ) {
     let HybridSystem { machine, .. } = hybrid;
     heat_pump_hour(
-        machine, asked.home, asked.cold, asked.water, asked.rooms, row, probe,
+        machine,
+        asked.home,
+        asked.cold,
+        asked.water,
+        asked.rooms,
+        row,
+        probe,
     );
     let has_store = asked
         .home

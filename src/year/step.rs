@@ -85,7 +85,10 @@ pub fn step<P: Probe>(
     };
 
     // What is asked: hot water by the clock, the rooms by their set point.
-    let shift_k = plan.store_shift_k.as_ref().map_or(0.0, |column| column[hour]);
+    let shift_k = plan
+        .store_shift_k
+        .as_ref()
+        .map_or(0.0, |column| column[hour]);
     let water = draw(home, site.civil[hour].hour, shift_k, state, &mut row);
     let reach = |target_c| {
         home.fabric
@@ -194,7 +197,9 @@ fn draw(home: &Home, clock_hour: u8, shift_k: f64, state: &State, row: &mut Row)
     };
     let drawn_kwh = water.drawn_kwh(clock_hour);
     let step = match &water.store {
-        Some(store) => store.shifted(shift_k).step(state.store_c, drawn_kwh, state.charging),
+        Some(store) => store
+            .shifted(shift_k)
+            .step(state.store_c, drawn_kwh, state.charging),
         None => StoreStep {
             drawn_kwh,
             wanted_kwh: drawn_kwh,
@@ -363,7 +368,10 @@ pub(super) fn boiler_hour(
     row: &mut Row,
 ) {
     row.heater_water_kwh = water.wanted_kwh.min(boiler.output_kw);
-    let has_store = home.hot_water.as_ref().is_some_and(|water| water.store.is_some());
+    let has_store = home
+        .hot_water
+        .as_ref()
+        .is_some_and(|water| water.store.is_some());
     row.fuel_kwh = row.heater_water_kwh / boiler.water_efficiency(has_store);
     row.heater_space_kwh = rooms
         .wanted_kwh

@@ -111,6 +111,13 @@ pub struct State {
 }
 
 impl State {
+    /// Puts rooms and store to other temperatures (°C), no block of hot water under way; what else lasts stays.
+    pub fn place(&mut self, room_c: f64, store_c: f64) {
+        self.room_c = room_c;
+        self.store_c = store_c;
+        self.charging = false;
+    }
+
     /// Rooms and store at their set points.
     pub fn at_rest(system: &System, set_point_c: f64) -> Self {
         let store = system.home.hot_water.as_ref().and_then(|water| water.store);
