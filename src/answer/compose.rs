@@ -2,6 +2,7 @@
 
 use std::collections::BTreeMap;
 
+use super::account::{bill_answers, meter_answers, shifting_answer, signal_gap};
 use super::estimate::{
     Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };
@@ -9,6 +10,8 @@ use crate::problem::{Finding, Problems, Severity};
 use crate::study::{
     BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even,
 };
+use crate::units::Fuel;
+use crate::year::Heating;
 
 /// What an estimate tells beside the figures of its case.
 #[derive(Debug, Clone, Default)]
@@ -27,6 +30,24 @@ pub struct Told {
     pub machines: Vec<Option<String>>,
 }
 
+/// Years over which refrigerant that escapes at the end of a machine's life is spread. Common practice, no source.
+const LEAKAGE_LIFE_YEARS: f64 = 15.0;
+
+impl Estimate {
+    /// The same estimate with the bills of every system.
+    ///
+    /// # Errors
+    /// When a reading cannot be priced.
+    pub fn with_bills(mut self, case: &Case, outcomes: &[Outcome]) -> Result<Self, Problems> {
+        for ((system, contender), outcome) in
+            self.systems.iter_mut().zip(&case.contenders).zip(outcomes)
+        {
+            system.bills = Some(bill_answers(contender, outcome)?);
+        }
+        Ok(self)
+    }
+}
+
 /// Makes the estimate.
 ///
 /// # Errors
@@ -37,12 +58,14 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
     let mut systems = Vec::with_capacity(outcomes.len());
     let mut break_evens = BTreeMap::new();
     for (i, (contender, outcome)) in case.contenders.iter().zip(outcomes).enumerate() {
-        let system = system(
+        let mut system = system(
             contender,
             outcome,
             outcomes,
             told.machines.get(i).cloned().flatten(),
         );
+        system.shifting = shifting_answer(case, contender)?;
+        findings.extend(signal_gap(contender, outcome)?);
         findings.extend(left_cold(&system));
         if i > 0 {
             let levers = [
@@ -110,6 +133,21 @@ fn system(
     let today = &all[0];
     let compared = |mine: f64, todays: f64| (!contender.today).then_some(todays - mine);
     let costs = &outcome.costs;
+    let years = outcome.years.len() as f64;
+    let household = &contender.household;
+    let accounted = household.used_kwh.is_some() || household.made_kwh.is_some();
+    let beside = contender
+        .beside
+        .iter()
+        .filter(|beside| beside.account.tariff.fuel == Fuel::Electricity);
+    let readings =
+        std::iter::once(&outcome.electricity).chain(beside.map(|beside| &beside.reading));
+    let (bought_kwh, fed_back_kwh) = readings.fold((0.0, 0.0), |(bought, fed), reading| {
+        (
+            bought + reading.import_kwh.iter().sum::<f64>() / years,
+            fed + reading.export_kwh.iter().sum::<f64>() / years,
+        )
+    });
     SystemAnswer {
         label: contender.system.label.clone(),
         kind: contender.kind.to_owned(),
@@ -121,6 +159,19 @@ fn system(
         electricity_kwh: sums.electricity_kwh(),
         backup_kwh: is_machine.then_some(sums.backup_kwh + sums.immersion_kwh),
         fuel_kwh: burns_fuel.then_some(sums.fuel_kwh),
+        fuel: heating.boiler().map(|boiler| boiler.fuel.name().to_owned()),
+        hybrid: match heating {
+            Heating::Hybrid(hybrid) => Some(hybrid.rule.word().to_owned()),
+            _ => None,
+        },
+        boiler_heat_kwh: (is_machine && burns_fuel)
+            .then_some(sums.heater_space_kwh + sums.heater_water_kwh),
+        household_kwh: household
+            .used_kwh
+            .as_ref()
+            .map(|column| column.iter().sum::<f64>() / years),
+        bought_kwh: accounted.then_some(bought_kwh),
+        fed_back_kwh: household.made_kwh.is_some().then_some(fed_back_kwh),
         spf_h1: sums.spf_h1(),
         spf_h2: sums.spf_h2(),
         spf_h3: sums.spf_h3(),
@@ -147,6 +198,9 @@ fn system(
         cost_standing: costs.standing,
         cost_tax: costs.tax,
         carbon_kg: sums.carbon_kg,
+        refrigerant_kg: contender
+            .leakage
+            .map(|leakage| leakage.kg_per_year(LEAKAGE_LIFE_YEARS)),
         saving: compared(costs.total, today.costs.total),
         carbon_saving_kg: compared(sums.carbon_kg, today.mean_sums().carbon_kg),
         capital: contender.capital,
@@ -171,6 +225,9 @@ fn system(
                 spf_h4: year.sums.spf_h4(),
             })
             .collect(),
+        shifting: None,
+        meters: meter_answers(contender, outcome),
+        bills: None,
     }
 }
 

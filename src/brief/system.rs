@@ -127,12 +127,13 @@ pub(super) fn contender(
         supplies.electricity = supplies.electricity.expecting(kwh);
     }
     let asked = plan(&supplies.electricity);
-    let (plan, unshifted) = match shifting {
-        None => (asked, None),
-        Some(shifting) => (
-            shifted(&shifting?, &asked, site, &system, warm.indoor_c),
-            Some(asked),
-        ),
+    let (plan, unshifted, shift_rule) = match shifting {
+        None => (asked, None, None),
+        Some(shifting) => {
+            let shifting = shifting?;
+            let plan = shifted(&shifting, &asked, site, &system, warm.indoor_c);
+            (plan, Some(asked), Some(shifting.0))
+        }
     };
     let leakage = leakage(table, system.heating.machine(), check, notes);
     let (machine, mut findings) =
@@ -149,6 +150,7 @@ pub(super) fn contender(
             beside: supplies.beside,
             household: Arc::clone(&energy.household),
             unshifted,
+            shift_rule,
             leakage,
             indoor_c: warm.indoor_c,
             design_outdoor_c: warm.design_outdoor_c,

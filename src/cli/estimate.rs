@@ -6,7 +6,8 @@ use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
 use crate::answer::{Estimate, compose};
 use crate::brief::{Brief, DEFAULTS};
 use crate::chart::{AnnualCost, Marks, SystemCost, annual_cost};
-use crate::report::{estimate_text, ledger_csv};
+use crate::report::{accounts_text, estimate_text, ledger_csv};
+use crate::study::bills;
 use crate::year::Ledger;
 
 /// Yearly cost and carbon of every system of a brief, beside what heats the home today.
@@ -33,6 +34,9 @@ pub struct Args {
     /// Say where each assumption is from.
     #[arg(long)]
     assumptions: bool,
+    /// Print the bills of every system, and what its meters should read.
+    #[arg(long)]
+    bills: bool,
     /// Print every default with its source, and stop.
     #[arg(long)]
     show_defaults: bool,
@@ -64,7 +68,10 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         outcomes.push(brief.case.run_one(contender, ledger.as_mut())?);
         ledgers.extend(ledger);
     }
-    let estimate = compose(&brief.case, &outcomes, &brief.told)?;
+    let mut estimate = compose(&brief.case, &outcomes, &brief.told)?;
+    if args.bills {
+        estimate = estimate.with_bills(&brief.case, &outcomes)?;
+    }
     if let Some(folder) = &args.out {
         let mut files = pictures(&estimate, folder)?;
         for (i, (contender, ledger)) in brief.case.contenders.iter().zip(&ledgers).enumerate() {
@@ -85,6 +92,17 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     warn(&estimate.findings);
     match args.format {
         Format::Json => print_json(&estimate),
+        Format::Text if args.bills => {
+            let contenders = brief.case.contenders.iter().zip(&outcomes);
+            let bills = contenders
+                .map(|(contender, outcome)| bills(contender, outcome))
+                .collect::<Result<Vec<_>, _>>()?;
+            let accounts = accounts_text(&estimate, &bills);
+            print(&format!(
+                "{}\n\n{accounts}",
+                estimate_text(&estimate, args.assumptions)
+            ))
+        }
         Format::Text => print(&estimate_text(&estimate, args.assumptions)),
     }
 }

@@ -37,6 +37,11 @@ pub enum ShiftRule {
 }
 
 impl ShiftRule {
+    /// Whether it knows what no controller knows.
+    pub fn knows_the_day_ahead(self) -> bool {
+        self == Self::BestDay
+    }
+
     /// The word in briefs and results.
     pub fn word(self) -> &'static str {
         match self {

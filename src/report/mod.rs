@@ -1,10 +1,12 @@
 //! Answers as text and files.
 
+mod account;
 mod explain;
 mod ledger;
 mod table;
 mod text;
 
+pub use account::{accounts_text, bill_table};
 pub use explain::explain_text;
 pub use ledger::{ledger_csv, ledger_legend};
 pub use table::{plain_table, plain_table_within};

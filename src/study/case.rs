@@ -7,6 +7,7 @@ use chrono_tz::Tz;
 use super::outcome::{Outcome, YearOutcome, price};
 use crate::bill::Connection;
 use crate::carbon::Leakage;
+use crate::plan::ShiftRule;
 use crate::problem::Problems;
 use crate::tariff::{Meter, Reading, Tariff};
 use crate::units::Currency;
@@ -67,6 +68,8 @@ pub struct Contender {
     pub household: Arc<Household>,
     /// The plan without shifting, where the plan shifts.
     pub unshifted: Option<Plan>,
+    /// How the hours are chosen, where the plan shifts.
+    pub shift_rule: Option<ShiftRule>,
     /// What escapes of its refrigerant, where that is counted.
     pub leakage: Option<Leakage>,
     /// Indoor set point, °C.

@@ -45,6 +45,7 @@ pub fn against_unshifted(case: &Case, contender: &Contender) -> Result<Option<Sh
     let unshifted = Contender {
         plan: plan.clone(),
         unshifted: None,
+        shift_rule: None,
         ..contender.clone()
     };
     let hours = case.site.outdoor_c.len();
