@@ -17,6 +17,7 @@ pub fn steady(
     Plan {
         set_point_c: vec![set_point_c; hours],
         backup_below_c: vec![set_point_c - backup_band_k; hours],
+        asked_c: None,
         store_shift_k: None,
         electricity,
         fuel,

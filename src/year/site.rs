@@ -80,6 +80,8 @@ impl Signal {
 pub struct Plan {
     /// Indoor set point, °C.
     pub set_point_c: Vec<f64>,
+    /// What the household asked for, °C, where the set points are shifted from it: rooms are short of heat against this.
+    pub asked_c: Option<Vec<f64>>,
     /// The backup heater only keeps the rooms above this, °C.
     pub backup_below_c: Vec<f64>,
     /// How much hotter than its set point the hot-water store is made in an hour, K; nothing where it is never shifted.

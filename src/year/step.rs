@@ -156,7 +156,11 @@ pub fn step<P: Probe>(
     row.fabric_loss_kwh = room.loss_kwh;
     row.room_stored_kwh = room.stored_kwh;
     row.aired_kwh = room.aired_kwh;
-    row.flags |= Flags::SHORT.when(room.end_c < set_point_c - SHORT_K);
+    let asked_c = plan
+        .asked_c
+        .as_ref()
+        .map_or(set_point_c, |column| column[hour]);
+    row.flags |= Flags::SHORT.when(room.end_c < asked_c - SHORT_K);
 
     // What it cost.
     charge_energy(plan, hour, &mut row);

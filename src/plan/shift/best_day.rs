@@ -109,6 +109,7 @@ impl<'a> Search<'a> {
         for below_c in &mut shifted.backup_below_c {
             *below_c -= shifting.rooms.below_k;
         }
+        shifted.asked_c = Some(base.set_point_c.clone());
         shifted.store_shift_k = Some(vec![0.0; site.civil.len()]);
         let store = system.home.hot_water.as_ref().and_then(|water| water.store);
         let stores = store.map_or((0.0, 1.0), |store| {

@@ -13,6 +13,7 @@ const WORTH_IT: f64 = 0.05;
 /// preheat: it keeps to the plan's own threshold, lowered by what the rooms may be cooler.
 pub fn timer(plan: &Plan, civil: &[CivilHour], shifting: &Shifting) -> Plan {
     let mut shifted = plan.clone();
+    shifted.asked_c = Some(plan.set_point_c.clone());
     let mut store_shift_k = vec![0.0; civil.len()];
     let mut first = 0;
     for day in civil.chunk_by(|a, b| a.date == b.date) {
