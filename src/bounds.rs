@@ -108,6 +108,58 @@ bounds! {
     HOURLY_KWH = "electricity in an hour", 0.0 ..= 100.0, "kWh";
     /// Refrigerant in a machine.
     REFRIGERANT_KG = "refrigerant charge", 0.05 ..= 20.0, "kg";
+    /// Coordinate of a bore or a trench.
+    GROUND_PLACE_M = "place on the plot", -1000.0 ..= 1000.0, "m";
+    /// Length of a bore that takes heat.
+    BORE_DEPTH_M = "bore depth", 5.0 ..= 400.0, "m";
+    /// Depth of the upper end of a bore.
+    BORE_BURIED_M = "depth of the bore's upper end", 0.0 ..= 20.0, "m";
+    /// Radius of a bore.
+    BORE_RADIUS_M = "bore radius", 0.03 ..= 0.3, "m";
+    /// Distance between the middles of bores; nearer ones are one bore.
+    BORE_DISTANCE_M = "distance between bores", 1.0 ..= 2000.0, "m";
+    /// Resistance from the wall of a bore to the brine.
+    BOREHOLE_M_K_PER_W = "borehole resistance", 0.01 ..= 0.6, "m K/W";
+    /// Distance between the middles of the two legs of a U-tube.
+    LEG_DISTANCE_M = "distance of the legs", 0.02 ..= 0.5, "m";
+    /// Conductivity of ground.
+    GROUND_W_PER_M_K = "conductivity of the ground", 0.2 ..= 7.0, "W/m/K";
+    /// Conductivity of grout.
+    GROUT_W_PER_M_K = "conductivity of the grout", 0.3 ..= 4.0, "W/m/K";
+    /// Outer diameter of a loop's pipe.
+    PIPE_OUTSIDE_M = "outer diameter of the pipe", 0.016 ..= 0.09, "m";
+    /// Wall of a loop's pipe.
+    PIPE_WALL_M = "wall of the pipe", 0.001 ..= 0.012, "m";
+    /// Conductivity of a pipe's wall.
+    PIPE_W_PER_M_K = "conductivity of the pipe", 0.1 ..= 2.0, "W/m/K";
+    /// Length of a trench.
+    TRENCH_LENGTH_M = "trench length", 5.0 ..= 2000.0, "m";
+    /// Distance of pipes in the ground; nearer ones are one pipe.
+    PIPE_DISTANCE_M = "distance between pipes", 0.1 ..= 20.0, "m";
+    /// Pipes side by side in a trench.
+    TRENCH_PIPES = "pipes side by side", 1.0 ..= 12.0, "";
+    /// Swing of the surface's temperature through the year, half from top to bottom.
+    SURFACE_SWING_K = "yearly swing of the surface", 0.0 ..= 30.0, "K";
+    /// A day of the year.
+    DAY_OF_YEAR = "day of the year", 1.0 ..= 366.0, "";
+    /// Geothermal gradient.
+    GRADIENT_K_PER_M = "geothermal gradient", -0.02 ..= 0.1, "K/m";
+    /// Heat put back into the ground in a year.
+    RECHARGE_KWH = "heat put back in a year", 0.0 ..= 100000.0, "kWh";
+    /// Flow of brine or well water.
+    SOURCE_FLOW_L_PER_S = "flow", 0.01 ..= 20.0, "L/s";
+    /// Efficiency of a pump from the plug to the water.
+    PUMP_EFFICIENCY = "efficiency of the pump", 0.05 ..= 0.9, "";
+    /// Share of antifreeze in brine, by mass: the range of the property polynomials.
+    ANTIFREEZE_SHARE = "share of antifreeze by mass", 0.0 ..= 0.6, "";
+    /// Well or surface water.
+    SOURCE_WATER_C = "well or surface water", 0.0 ..= 30.0, "°C";
+    /// Difference an exchanger needs.
+    APPROACH_K = "approach of the exchanger", 0.0 ..= 10.0, "K";
+    /// Head of a well pump.
+    HEAD_M = "pump head", 0.0 ..= 200.0, "m";
+    /// Year of a buried loop's life.
+    LOOP_YEAR = "year of the loop's life", 1.0 ..= 60.0, "";
     /// Carbon factor of any fuel or electricity.
     CARBON_KG_PER_KWH = "carbon factor", 0.0 ..= 2.0, "kg CO2e/kWh";
     /// Allowance from laboratory to home, as a multiplier of the laboratory figure.

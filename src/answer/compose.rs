@@ -7,6 +7,7 @@ use super::estimate::{
     Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
 };
 use crate::problem::{Finding, Problems, Severity};
+use crate::source::Memory;
 use crate::study::{
     BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even,
 };
@@ -120,6 +121,9 @@ fn system(
     let heating = &contender.system.heating;
     let is_machine = heating.machine().is_some();
     let burns_fuel = heating.boiler().is_some();
+    let ground = contender
+        .aged
+        .map_or_else(Memory::default, |aged| aged.memory);
     let balance = |with_hot_water| {
         let machine = heating.machine()?;
         balance_point(
@@ -127,6 +131,7 @@ fn system(
             machine,
             contender.indoor_c,
             with_hot_water,
+            ground,
         )
     };
     let balance_points = (balance(false), balance(true));

@@ -4,7 +4,7 @@ use chrono::{SecondsFormat, TimeZone as _};
 use serde::Serialize;
 
 use super::cycle::StateAnswer;
-use crate::home::Home;
+use crate::home::{Home, RECOVERY_H};
 use crate::study::{Case, Contender, Traced, TracedDuty};
 use crate::year::{DutyKind, MachineSystem, Row};
 
@@ -128,7 +128,6 @@ fn rooms(home: &Home, contender: &Contender, traced: &Traced) -> Part {
     let row = &traced.row;
     let fabric = &home.fabric;
     let loss = fabric.heat_loss_w_per_k() / 1000.0;
-    let left = fabric.left_after_hour();
     let mut part = lines();
     part.add("heat-loss coefficient", loss * 1000.0, "W/K", "brief");
     part.add(
@@ -148,12 +147,15 @@ fn rooms(home: &Home, contender: &Contender, traced: &Traced) -> Part {
             row.gains_kwh - fabric.internal_gains_kw()
         ),
     );
-    let settles = (row.set_point_c - traced.before.room_c * left) / (1.0 - left);
+    let settles = fabric.recovery_heads_for_c(traced.before.room_c, row.set_point_c);
     part.add(
         "temperature to head for",
         settles,
         "°C",
-        format!("(set point − before × e^(−1h/τ)) / (1 − e^(−1h/τ)), e^(−1h/τ) = {left:.4}"),
+        format!(
+            "(set point − before × e^(−{RECOVERY_H:.0}h/τ)) / (1 − e^(−{RECOVERY_H:.0}h/τ)), τ = {:.1} h",
+            fabric.time_constant_h()
+        ),
     );
     part.add(
         "heat wanted",

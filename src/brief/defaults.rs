@@ -53,6 +53,20 @@ defaults! {
         "published field efficiency 82.5 to 85.3 % gross over the ideal flue-loss curve (from memory)";
     LOOP_DEPTH = "choice.loop_depth", "1.2 m", "common practice, no source";
     SOIL_DIFFUSIVITY = "choice.soil_diffusivity", "5e-7 m²/s", "moist loam: common practice, no source";
+    GRADIENT = "choice.ground.gradient", "30 K/km", "common practice, no source";
+    BURIED = "choice.bore.buried", "1 m", "common practice, no source";
+    BORE_RADIUS = "choice.bore.radius", "65 mm", "common practice, no source";
+    GROUT = "choice.borehole.grout", "1.5 W/m/K", "within the published range of 0.9 to 1.8 W/m/K";
+    PIPE_OUTSIDE = "choice.pipe.outside", "40 mm", "common practice, no source";
+    PIPE_WALL = "choice.pipe.wall", "3.7 mm", "PE 100, SDR 11: common practice, no source";
+    PIPE_CONDUCTIVITY = "choice.pipe.conductivity", "0.42 W/m/K", "polyethylene: common practice, no source";
+    TRENCH_SPACING = "choice.trench.spacing", "0.5 m", "common practice, no source";
+    ANTIFREEZE = "choice.brine.fluid", "ethylene glycol", "common practice, no source";
+    ANTIFREEZE_SHARE = "choice.brine.share", "30 %", "common practice, no source";
+    BRINE_SPREAD = "choice.brine.flow", "3 K", "brine cools by this in the machine at its rating point (EN 14511: 0 to -3 °C)";
+    PUMP_EFFICIENCY = "choice.brine.pump_efficiency", "30 %", "from the plug to the water: common practice, no source";
+    APPROACH = "choice.well.approach", "0 K", "water through the machine itself unless an exchanger is given";
+    WELL_PUMP_EFFICIENCY = "choice.well.pump_efficiency", "40 %", "from the plug to the water: common practice, no source";
     BOILER_OUTPUT = "today.output", "24 kW", "common practice, no source";
     PELLET_EFFICIENCY = "today.efficiency", "75 % gross",
         "of a pellet boiler: default of SAP table 4a for automatic feed (from memory)";

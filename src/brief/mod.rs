@@ -7,6 +7,7 @@ mod defaults;
 mod demo;
 mod energy;
 mod files;
+mod ground;
 mod home;
 mod household;
 mod machine;

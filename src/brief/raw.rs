@@ -4,6 +4,9 @@ use schemars::JsonSchema;
 use serde::Deserialize;
 
 use super::columns::{BoilerFuel, ByMonth, DayShape, RuleWord, Stamps};
+use super::ground::{
+    BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
+};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind};
@@ -291,6 +294,24 @@ pub(super) struct SystemTable {
     pub loop_resistance: Option<Leaf<LoopResistance>>,
     /// Ground source: thermal diffusivity of the soil.
     pub soil_diffusivity: Option<Leaf<Diffusivity>>,
+    /// Ground source: the ground about bores or trenches.
+    pub ground: Option<Section<GroundTable>>,
+    /// Ground source: what flows in bores or trenches.
+    pub brine: Option<Section<BrineTable>>,
+    /// Ground source: the pipe of bores or trenches.
+    pub pipe: Option<Section<PipeTable>>,
+    /// Ground source: what is in the bores.
+    pub borehole: Option<Section<BoreholeTable>>,
+    /// Ground source: a bore, one table each.
+    #[serde(default)]
+    pub bore: Vec<Section<BoreTable>>,
+    /// Ground source: a trench, one table each.
+    #[serde(default)]
+    pub trench: Vec<Section<TrenchTable>>,
+    /// Ground source: a well or surface water.
+    pub well: Option<Section<WellTable>>,
+    /// Ground source: year of the loop's life that is compared, from 1.
+    pub shown_year: Option<Leaf<i64>>,
 
     /// Boiler or electric heater: greatest output.
     pub output: Option<Leaf<Power>>,

@@ -130,13 +130,15 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         ..
     } = energy?;
     let (weather, site, zone) = (weather?, site?, zone?);
+    let mut case = Case {
+        site,
+        time_zone: zone,
+        currency,
+        contenders,
+    };
+    case.age_grounds();
     Some(Brief {
-        case: Case {
-            site,
-            time_zone: zone,
-            currency,
-            contenders,
-        },
+        case,
         told: Told {
             home_label: label,
             weather_file: weather.file,

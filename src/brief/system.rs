@@ -8,6 +8,7 @@ use super::boiler::{Kept, boiler, kept};
 use super::defaults;
 use super::energy::{Energy, Supply};
 use super::files::Folder;
+use super::ground::{Ground, ground, whole_within};
 use super::home::{Warm, WeatherFacts, warm_side};
 use super::machine::{MachineMade, machine};
 use super::notes::Notes;
@@ -18,8 +19,8 @@ use crate::carbon::Leakage;
 use crate::document::{Check, Leaf, Section};
 use crate::plan::steady;
 use crate::problem::Finding;
-use crate::source::{AnnualSwing, GroundLoop, Source, undisturbed_c};
-use crate::study::{Beside, Contender};
+use crate::source::Source;
+use crate::study::{Beside, Contender, SHOWN_YEAR};
 use crate::tariff::Metering;
 use crate::units::{Fuel, Money, TemperatureDifference, parse};
 use crate::year::{Heating, HybridSystem, MachineSystem, Metered, Plan, Site, State, System, run};
@@ -65,6 +66,7 @@ pub(super) fn contender(
     let kind = kind.map(|(kind,)| kind);
     let warm = warm_side(around.home, table, kind, around.facts, check, notes);
     let capital = capital(table, around.energy, check);
+    let shown_year = shown_year(table, check);
     let kind = kind?;
     only_its_own_fields(table, kind, check);
     let shifting = table
@@ -155,6 +157,8 @@ pub(super) fn contender(
             indoor_c: warm.indoor_c,
             design_outdoor_c: warm.design_outdoor_c,
             capital: capital?,
+            shown_year: shown_year?,
+            aged: None,
         },
         machine,
         findings,
@@ -313,6 +317,14 @@ fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> O
     Some(money.amount.to_f64())
 }
 
+/// Year of a buried loop's life that is shown.
+fn shown_year(table: &SystemTable, check: &mut Check) -> Option<u32> {
+    if table.shown_year.is_none() {
+        return Some(SHOWN_YEAR);
+    }
+    whole_within(check, &table.shown_year, &bounds::LOOP_YEAR).map(|year| year as u32)
+}
+
 fn direct_electric(table: &Section<SystemTable>, check: &mut Check) -> Option<Heating> {
     check.required(&table.output, &table.span(), "output", "\"8 kW\"");
     let output = check.within(&table.output, &bounds::OUTPUT_KW)?;
@@ -342,16 +354,37 @@ fn heat_pump(
         &bounds::AUXILIARY_KW,
         &defaults::CIRCULATION_PUMP,
     );
+    let mut made = machine(table, kind, around.folder, warm, check, notes);
+    let mut findings = Vec::new();
     let source = match kind {
-        SystemKind::GroundSource => ground(table, around, check, notes).map(Source::Ground),
+        SystemKind::GroundSource => {
+            let machine = made.as_ref().map(|made| &made.machine);
+            ground(
+                &Ground {
+                    table,
+                    around,
+                    machine,
+                },
+                check,
+                notes,
+                &mut findings,
+            )
+        }
         _ => Some(Source::OutdoorAir),
     };
     let kept = table.boiler.as_ref().map(|table| kept(table, check, notes));
-    let made = machine(table, kind, around.folder, warm, check, notes);
-    let made = made?;
+    if let Some(made) = &mut made {
+        made.findings.append(&mut findings);
+    }
+    let (source, made) = (source?, made?);
+    // The pump of a described loop is computed with it; the machine keeps what its tested points hold.
+    let machine = match &source {
+        Source::Buried(_) | Source::Water(_) => made.machine.without_outside_pump(),
+        Source::OutdoorAir | Source::Ground(_) => made.machine.clone(),
+    };
     let system = MachineSystem {
-        machine: made.machine.clone(),
-        source: source?,
+        machine,
+        source,
         backup_kw: backup?.kw(),
         immersion_kw: immersion?.kw(),
         circulation_kw: pump?.kw(),
@@ -373,59 +406,6 @@ fn heat_pump(
         }
     };
     Some((heating, Some(made)))
-}
-
-fn ground(
-    table: &Section<SystemTable>,
-    around: &Surroundings<'_>,
-    check: &mut Check,
-    notes: &mut Notes,
-) -> Option<GroundLoop> {
-    let depth = notes.quantity(
-        check,
-        &table.loop_depth,
-        &bounds::TRENCH_DEPTH_M,
-        &defaults::LOOP_DEPTH,
-    );
-    let diffusivity = notes.quantity(
-        check,
-        &table.soil_diffusivity,
-        &bounds::DIFFUSIVITY_M2_PER_S,
-        &defaults::SOIL_DIFFUSIVITY,
-    );
-    check.required(
-        &table.loop_resistance,
-        &table.span(),
-        "loop_resistance",
-        "\"1.6 K/kW\": a loop whose brine falls 1.6 K below the ground for each kW drawn",
-    );
-    let resistance = check.within(&table.loop_resistance, &bounds::LOOP_K_PER_KW);
-    let outdoor_c = &around.site?.outdoor_c;
-    let Some(wave) = AnnualSwing::fit(outdoor_c) else {
-        check.refuse(
-            &table.span(),
-            format!("{} hours of weather for a ground source", outdoor_c.len()),
-            "a whole year, from which the ground's temperature follows",
-            "give a weather file of at least 8760 hours",
-        );
-        return None;
-    };
-    let (depth_m, diffusivity) = (depth?.m(), diffusivity?.m2_per_s());
-    let undisturbed_c = (0..outdoor_c.len())
-        .map(|hour| undisturbed_c(&wave, depth_m, diffusivity, hour as f64))
-        .collect();
-    notes.add(
-        "undisturbed ground",
-        format!(
-            "mean {:.1} °C, swing {:.1} K at the surface",
-            wave.mean_c, wave.amplitude_k
-        ),
-        "annual wave of the weather file carried down by Kusuda and Achenbach 1965",
-    );
-    Some(GroundLoop {
-        undisturbed_c,
-        resistance_k_per_kw: resistance?.k_per_kw(),
-    })
 }
 
 /// A field's name and its place, where the field is given.
@@ -476,6 +456,14 @@ fn only_its_own_fields(table: &SystemTable, kind: SystemKind, check: &mut Check)
                 given("loop_depth", &table.loop_depth),
                 given("loop_resistance", &table.loop_resistance),
                 given("soil_diffusivity", &table.soil_diffusivity),
+                given("shown_year", &table.shown_year),
+                ("ground", table.ground.as_ref().map(Section::span)),
+                ("brine", table.brine.as_ref().map(Section::span)),
+                ("pipe", table.pipe.as_ref().map(Section::span)),
+                ("borehole", table.borehole.as_ref().map(Section::span)),
+                ("bore", table.bore.first().map(Section::span)),
+                ("trench", table.trench.first().map(Section::span)),
+                ("well", table.well.as_ref().map(Section::span)),
             ],
         ),
         (

@@ -106,6 +106,15 @@ impl HeatPump {
         }
     }
 
+    /// The same machine with a source pump that overcomes the machine alone, as in its tested points: for a loop whose own pump
+    /// is accounted for elsewhere.
+    pub fn without_outside_pump(&self) -> Self {
+        Self {
+            source_side_factor: 1.0,
+            ..self.clone()
+        }
+    }
+
     /// What it is called.
     pub fn label(&self) -> &str {
         &self.core.label

@@ -40,6 +40,8 @@ pub struct Fabric {
     airing_k: f64,
     /// exp(−1 h/τ): the share of a temperature difference that is left after an hour.
     left_after_hour: f64,
+    /// The same after [`RECOVERY_H`].
+    left_after_recovery: f64,
 }
 
 /// What an hour did to the room.
@@ -54,6 +56,10 @@ pub struct RoomStep {
     /// Gains that were aired out because the room grew too warm, kWh.
     pub aired_kwh: f64,
 }
+
+/// A controller brings rooms back to their set point over about this time, h: a compensated flow temperature leaves no more. Common
+/// practice, no source.
+pub const RECOVERY_H: f64 = 6.0;
 
 /// Rooms are aired from this much above the set point. Common practice, no source.
 const AIRING_K: f64 = 3.0;
@@ -70,17 +76,21 @@ impl Fabric {
         solar_aperture_m2: f64,
     ) -> Self {
         let heat_loss_kw_per_k = heat_loss_w_per_k / 1000.0;
+        let left_after = |hours: f64| {
+            if capacity_kwh_per_k > 0.0 {
+                (-hours * heat_loss_kw_per_k / capacity_kwh_per_k).exp()
+            } else {
+                0.0
+            }
+        };
         Self {
             heat_loss_kw_per_k,
             capacity_kwh_per_k,
             gains_kw,
             solar_aperture_m2,
             airing_k: AIRING_K,
-            left_after_hour: if capacity_kwh_per_k > 0.0 {
-                (-heat_loss_kw_per_k / capacity_kwh_per_k).exp()
-            } else {
-                0.0
-            },
+            left_after_hour: left_after(1.0),
+            left_after_recovery: left_after(RECOVERY_H),
         }
     }
 
@@ -129,7 +139,7 @@ impl Fabric {
     /// The constant heat that brings the room from `room_c` to `target_c` in one hour, kWh; 0 when it gets there alone.
     ///
     /// One capacity: `C dT/dt = Q + G − H (T − To)`, solved exactly for constant right-hand side:
-    /// `T(1 h) = T∞ + (T0 − T∞) e^(−1h/τ)` with `T∞ = To + (Q + G)/H`.
+    /// `T(t) = T∞ + (T0 − T∞) e^(−t/τ)` with `T∞ = To + (Q + G)/H`.
     pub fn heat_to_reach_kwh(
         &self,
         room_c: f64,
@@ -137,9 +147,35 @@ impl Fabric {
         outdoor_c: f64,
         gains_kw: f64,
     ) -> f64 {
-        let left = self.left_after_hour;
-        let settles_c = (target_c - room_c * left) / (1.0 - left);
+        self.heat_kw(self.left_after_hour, room_c, target_c, outdoor_c, gains_kw)
+    }
+
+    /// The constant heat that brings the room from `room_c` to `target_c` in [`RECOVERY_H`], kW: what a controller asks for.
+    ///
+    /// At the set point it is the steady loss less gains, whatever the time.
+    pub fn heat_wanted_kw(&self, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
+        self.heat_kw(
+            self.left_after_recovery,
+            room_c,
+            target_c,
+            outdoor_c,
+            gains_kw,
+        )
+    }
+
+    fn heat_kw(&self, left: f64, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
+        let settles_c = self.heads_for_c(left, room_c, target_c);
         (self.heat_loss_kw_per_k * (settles_c - outdoor_c) - gains_kw).max(0.0)
+    }
+
+    /// Temperature the room heads for when a share `left` of its distance is left at the target, °C.
+    fn heads_for_c(&self, left: f64, room_c: f64, target_c: f64) -> f64 {
+        (target_c - room_c * left) / (1.0 - left)
+    }
+
+    /// Temperature that the heat wanted heads for, °C.
+    pub fn recovery_heads_for_c(&self, room_c: f64, target_c: f64) -> f64 {
+        self.heads_for_c(self.left_after_recovery, room_c, target_c)
     }
 
     /// Steps the room through one hour with a constant heat (kWh in the hour).
@@ -210,6 +246,15 @@ mod tests {
         let heat = fabric.heat_to_reach_kwh(15.0, 20.0, -5.0, 0.3);
         assert!((heat - (5.0 - 0.3)).abs() < 1e-12);
         assert!((fabric.step(15.0, heat, -5.0, 0.3, 20.0).end_c - 20.0).abs() < 1e-12);
+    }
+
+    /// At the set point the heat wanted is the steady loss, so that a year of it is the steady-state sum.
+    #[test]
+    fn at_the_set_point_the_heat_wanted_is_the_steady_loss() {
+        let wanted = terrace().heat_wanted_kw(20.0, 20.0, 3.0, 0.4);
+        assert!((wanted - (0.212 * 17.0 - 0.4)).abs() < 1e-12);
+        let cool = terrace().heat_wanted_kw(19.5, 20.0, 3.0, 0.4);
+        assert!(cool > wanted && cool < terrace().heat_to_reach_kwh(19.5, 20.0, 3.0, 0.4));
     }
 
     proptest! {

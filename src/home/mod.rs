@@ -9,7 +9,7 @@ mod fabric;
 mod hot_water;
 
 pub use emitters::{EmitterKind, Emitters, WaterTemperatures};
-pub use fabric::{Construction, Fabric, RoomStep};
+pub use fabric::{Construction, Fabric, RECOVERY_H, RoomStep};
 pub use hot_water::{DRAW_SHARES, HotWater, Store, StoreStep, WATER_KWH_PER_L_K};
 
 /// One home as the hour loop needs it.

@@ -1,11 +1,37 @@
-//! What the cold side offers: outdoor air, ground.
+//! What the cold side offers: outdoor air, ground, water.
 //!
 //! Every source answers each hour with an [`Offer`]: the temperature it would give with nothing drawn, and how far it
-//! falls per kilowatt drawn. The step solves machine and offer together.
+//! falls per kilowatt drawn. The step solves machine and offer together and tells the source afterwards what was drawn; what the
+//! ground remembers of that is its [`Memory`].
+//!
+//! `line`, `bores` and `trench` say how a wall falls when heat is taken; `response` makes a memory of that; `borehole`, `pipe`,
+//! `brine` and `circuit` lead from the wall to the machine; `buried` puts them together.
 
+mod borehole;
+mod bores;
+mod brine;
+mod buried;
+mod circuit;
+mod line;
+mod pipe;
+mod response;
+mod soil;
+mod trench;
 mod undisturbed;
+mod water;
 
-pub use undisturbed::{AnnualSwing, TRENCH_DIFFUSIVITY_M2_PER_S, undisturbed_c};
+pub use borehole::UTube;
+pub use bores::{Bore, total_depth_m};
+pub use brine::{Antifreeze, Brine, BrineProperties, GREATEST_SHARE};
+pub use buried::{BuriedLoop, Filling, Layout, LoopDesign, RECHARGE_DAYS};
+pub use circuit::{BRINE_C, Circuit, Pump};
+pub use line::EARLY_ERROR;
+pub use pipe::{LAMINAR_BELOW, Pipe, PipeFlow};
+pub use response::{Memory, NoResponse, Response};
+pub use soil::{RuleOfThumb, SOILS, Soil, SoilClass};
+pub use trench::{Trench, steady_response, total_pipe_m};
+pub use undisturbed::{AnnualSwing, HOURS_PER_YEAR, TRENCH_DIFFUSIVITY_M2_PER_S, undisturbed_c};
+pub use water::WaterSource;
 
 /// What a source gives in an hour.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -21,8 +47,12 @@ pub struct Offer {
 pub enum Source {
     /// Outdoor air, which nobody can draw down.
     OutdoorAir,
-    /// A buried loop behind one steady resistance.
+    /// A buried loop behind one steady resistance: the quick option, without memory.
     Ground(GroundLoop),
+    /// Bores or trenches with their memory.
+    Buried(Box<BuriedLoop>),
+    /// A well or surface water.
+    Water(WaterSource),
 }
 
 /// A buried loop: undisturbed ground hour by hour behind a steady loop resistance.
@@ -35,8 +65,8 @@ pub struct GroundLoop {
 }
 
 impl Source {
-    /// The offer of an hour with an outdoor temperature (°C).
-    pub fn offer(&self, hour: usize, outdoor_c: f64) -> Offer {
+    /// The offer of an hour with an outdoor temperature (°C), after what the ground remembers.
+    pub fn offer(&self, hour: usize, outdoor_c: f64, memory: &Memory) -> Offer {
         match self {
             Self::OutdoorAir => Offer {
                 open_c: outdoor_c,
@@ -46,15 +76,52 @@ impl Source {
                 open_c: ground.undisturbed_c.get(hour).copied().unwrap_or(f64::NAN),
                 k_per_kw: ground.resistance_k_per_kw,
             },
+            Self::Buried(buried) => buried.offer(hour, memory),
+            Self::Water(water) => water.offer(hour),
         }
     }
 
-    /// The lowest temperature it offers over the hours, °C; for air that of the weather.
-    pub fn lowest_c(&self, outdoor_c: &[f64]) -> f64 {
-        let column = match self {
-            Self::OutdoorAir => outdoor_c,
-            Self::Ground(ground) => &ground.undisturbed_c,
+    /// Tells the source what was drawn from it in the hour, kWh.
+    pub fn drawn(&self, hour: usize, extracted_kwh: f64, memory: &mut Memory) {
+        if let Self::Buried(buried) = self {
+            buried.drawn(hour, extracted_kwh, memory);
+        }
+    }
+
+    /// Electricity of pumps outside the machine in the hour, kWh, beyond what the machine's tested points hold.
+    pub fn pump_kwh(&self, hour: usize, running_hours: f64) -> f64 {
+        match self {
+            Self::OutdoorAir | Self::Ground(_) => 0.0,
+            Self::Buried(buried) => buried.pump_kwh(hour, running_hours),
+            Self::Water(water) => water.pump_kw * running_hours,
+        }
+    }
+
+    /// Heat put back into the ground in the hour, kWh.
+    pub fn returned_kwh(&self, hour: usize) -> f64 {
+        match self {
+            Self::Buried(buried) => buried.recharging_kw(hour),
+            _ => 0.0,
+        }
+    }
+
+    /// Whether years of draw change what it offers.
+    pub fn remembers(&self) -> bool {
+        matches!(self, Self::Buried(_))
+    }
+
+    /// What it offers on a cold night of an outdoor temperature (°C): ground and water are then taken at their coldest.
+    pub fn cold_offer(&self, outdoor_c: f64, memory: &Memory) -> Offer {
+        let coldest = |column: &[f64]| {
+            let place = column.iter().enumerate().min_by(|a, b| a.1.total_cmp(b.1));
+            place.map_or(0, |(hour, _)| hour)
         };
-        column.iter().copied().fold(f64::INFINITY, f64::min)
+        let hour = match self {
+            Self::OutdoorAir => 0,
+            Self::Ground(ground) => coldest(&ground.undisturbed_c),
+            Self::Buried(buried) => coldest(buried.undisturbed()),
+            Self::Water(water) => coldest(&water.water_c),
+        };
+        self.offer(hour, outdoor_c, memory)
     }
 }

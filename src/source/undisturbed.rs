@@ -3,7 +3,7 @@
 use std::f64::consts::{PI, TAU};
 
 /// Hours in the year of the annual wave.
-const HOURS_PER_YEAR: f64 = 8766.0;
+pub const HOURS_PER_YEAR: f64 = 8766.0;
 
 /// Diffusivity of moist loam, the usual soil over a trench: 0.5e-6 m²/s (methods §4; common practice).
 pub const TRENCH_DIFFUSIVITY_M2_PER_S: f64 = 0.5e-6;

@@ -4,7 +4,7 @@ use argmin::core::{CostFunction, Error, Executor, State as _};
 use argmin::solver::brent::BrentRoot;
 
 use crate::heatpump::ColdSide;
-use crate::source::Source;
+use crate::source::Memory;
 use crate::year::{MachineSystem, System};
 
 /// Outdoor temperatures between which a balance point is looked for, °C.
@@ -41,6 +41,7 @@ struct Surplus<'a> {
     machine: &'a MachineSystem,
     indoor_c: f64,
     water_kw: f64,
+    ground: Memory,
 }
 
 impl Surplus<'_> {
@@ -50,18 +51,12 @@ impl Surplus<'_> {
             .fabric
             .design_load_kw(self.indoor_c, outdoor_c)
             .max(0.0);
-        let cold = match &self.machine.source {
-            Source::OutdoorAir => ColdSide {
-                open_c: outdoor_c,
-                k_per_kw: 0.0,
-                relative_humidity: None,
-            },
-            // A cold night meets the ground at its coldest.
-            Source::Ground(ground) => ColdSide {
-                open_c: self.machine.source.lowest_c(&[]),
-                k_per_kw: ground.resistance_k_per_kw,
-                relative_humidity: None,
-            },
+        // A cold night meets ground and water at their coldest.
+        let offer = self.machine.source.cold_offer(outdoor_c, &self.ground);
+        let cold = ColdSide {
+            open_c: offer.open_c,
+            k_per_kw: offer.k_per_kw,
+            relative_humidity: None,
         };
         let flow_c = home.emitters.at_load(load_kw, self.indoor_c).flow_c;
         self.machine.machine.greatest_output_kw(&cold, flow_c) - load_kw - self.water_kw
@@ -78,7 +73,8 @@ impl CostFunction for Surplus<'_> {
 }
 
 /// The balance point of a machine: the load is the steady loss from the set point without gains, as for the design heat
-/// load; `with_hot_water` adds the mean power of the day's hot water.
+/// load; `with_hot_water` adds the mean power of the day's hot water; `ground` is what the ground
+/// remembers.
 ///
 /// Nothing when the solver does not converge.
 pub fn balance_point(
@@ -86,6 +82,7 @@ pub fn balance_point(
     machine: &MachineSystem,
     indoor_c: f64,
     with_hot_water: bool,
+    ground: Memory,
 ) -> Option<BalancePoint> {
     let daily_kwh = system
         .home
@@ -102,6 +99,7 @@ pub fn balance_point(
         machine,
         indoor_c,
         water_kw,
+        ground,
     };
     let (low_c, high_c) = RANGE_C;
     if surplus.at(low_c) >= 0.0 {

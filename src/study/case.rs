@@ -4,11 +4,13 @@ use std::sync::Arc;
 
 use chrono_tz::Tz;
 
+use super::ageing::Aged;
 use super::outcome::{Outcome, YearOutcome, price};
 use crate::bill::Connection;
 use crate::carbon::Leakage;
 use crate::plan::ShiftRule;
 use crate::problem::Problems;
+use crate::source::Memory;
 use crate::tariff::{Meter, Reading, Tariff};
 use crate::units::Currency;
 use crate::year::{Household, Ledger, Metered, Plan, Site, State, System, Totals, run};
@@ -78,6 +80,10 @@ pub struct Contender {
     pub design_outdoor_c: f64,
     /// What it costs to put in, in the case's currency.
     pub capital: Option<f64>,
+    /// Year of a buried loop's life that is shown, from 1.
+    pub shown_year: u32,
+    /// The ground at the beginning of that year, see [`Case::age_grounds`]; nothing for fresh ground or none.
+    pub aged: Option<Aged>,
 }
 
 impl Case {
@@ -94,16 +100,43 @@ impl Case {
 
     /// Runs one system through every year, keeping its rows in a ledger where one is given.
     ///
+    /// A buried loop begins as earlier years left it. When the system was changed after those were run, their history is
+    /// scaled to what the changed system draws.
+    ///
     /// # Errors
     /// When a bill cannot be made.
     pub fn run_one(
         &self,
         contender: &Contender,
+        ledger: Option<&mut Ledger>,
+    ) -> Result<Outcome, Problems> {
+        let Some(aged) = contender.aged else {
+            return self.run_from(contender, Memory::default(), ledger);
+        };
+        if !aged.moved {
+            return self.run_from(contender, aged.memory, ledger);
+        }
+        let trial = self.run_from(contender, aged.memory, None)?;
+        let drawn_kwh = trial.mean(|year| year.sums.extracted_kwh - year.sums.returned_kwh);
+        self.run_from(contender, aged.for_draw(drawn_kwh), ledger)
+    }
+
+    /// Runs one system through every year from what its ground remembers.
+    ///
+    /// # Errors
+    /// When a bill cannot be made.
+    pub fn run_from(
+        &self,
+        contender: &Contender,
+        ground: Memory,
         mut ledger: Option<&mut Ledger>,
     ) -> Result<Outcome, Problems> {
         let site = &*self.site;
         let (system, plan) = (&contender.system, &contender.plan);
-        let mut state = State::at_rest(system, contender.indoor_c);
+        let mut state = State {
+            ground,
+            ..State::at_rest(system, contender.indoor_c)
+        };
         let mut metered = Metered::new(
             contender.electricity.tariff.metering,
             &contender.household,

@@ -102,12 +102,14 @@ impl Lever {
                 for contender in &mut case.contenders {
                     let fabric = &mut contender.system.home.fabric;
                     *fabric = fabric.with_heat_loss(fabric.heat_loss_w_per_k() * value);
+                    contender.moved();
                 }
             }
             Self::FlowTemperature => {
                 if let Some(contender) = case.contenders.get_mut(choice) {
                     let emitters = &mut contender.system.home.emitters;
                     *emitters = emitters.with_design_flow(value, contender.indoor_c);
+                    contender.moved();
                 }
             }
             Self::FieldFactor => {

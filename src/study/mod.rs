@@ -1,5 +1,6 @@
 //! Cases side by side: what each system costs, its balance point, levers and break-even.
 
+mod ageing;
 mod balance;
 mod break_even;
 mod case;
@@ -9,6 +10,7 @@ mod outcome;
 mod shifting;
 mod traced;
 
+pub use ageing::{Aged, SHOWN_YEAR};
 pub use balance::{BalancePoint, balance_point};
 pub use break_even::{BreakEven, Crossing, break_even};
 pub use case::{Account, Beside, Case, Contender};

@@ -102,6 +102,12 @@ measures! {
     /// Mass flow.
     MassFlow, "a mass flow", kg_per_s, from_kg_per_s, "0.02 kg/s",
         ["kg/s" = 1.0; "kg/h" = 1.0 / 3600.0; "g/s" = 0.001;];
+    /// A flow of water or brine.
+    VolumeFlow, "a flow", l_per_s, from_l_per_s, "0.4 L/s",
+        ["L/s" = 1.0; "L/min" = 1.0 / 60.0; "L/h" = 1.0 / 3600.0; "m³/h" = 1.0 / 3.6; "US gpm" = 3.785_411_784 / 60.0;];
+    /// Change of temperature with depth.
+    TemperatureGradient, "a temperature gradient", k_per_m, from_k_per_m, "30 K/km",
+        ["K/m" = 1.0; "K/km" = 0.001;];
     /// Carbon dioxide equivalent per kilowatt-hour.
     CarbonFactor, "a carbon factor", kg_per_kwh, from_kg_per_kwh, "0.183 kg/kWh",
         ["kg/kWh" = 1.0; "kg CO2e/kWh" = 1.0; "g/kWh" = 0.001; "g CO2e/kWh" = 0.001;];
@@ -173,6 +179,8 @@ mod tests {
         check::<Mass>();
         check::<Current>();
         check::<MassFlow>();
+        check::<VolumeFlow>();
+        check::<TemperatureGradient>();
         check::<CarbonFactor>();
     }
 }

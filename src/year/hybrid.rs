@@ -37,6 +37,11 @@ pub(super) fn hybrid_hour<P: Probe>(
     };
     let mut by_machine = *row;
     by_machine_hour(hybrid, asked, &mut by_machine, &mut Unwatched);
+    // The step charges the pump of a ground loop after the hour is decided.
+    by_machine.source_side_kwh += hybrid
+        .machine
+        .source
+        .pump_kwh(asked.hour, by_machine.running_hours);
     let mut by_boiler = *row;
     by_boiler_hour(hybrid, asked, &mut by_boiler);
     match hybrid
@@ -79,7 +84,7 @@ fn by_machine_hour<P: Probe>(
     };
     if rooms_lack_kwh > 0.0 || water_kwh > 0.0 {
         let rooms = Rooms {
-            wanted_kwh: rooms_lack_kwh.max(0.0),
+            wanted_kw: rooms_lack_kwh.max(0.0),
             ..*asked.rooms
         };
         let water = StoreStep {

@@ -79,11 +79,12 @@ ledger! {
         store_stored_kwh: "heat stored in the hot-water store, negative when it is given back";
         machine_water_kwh: "heat of the machine to hot water";
         heater_water_kwh: "heat of the boiler or electric heater to hot water";
-        extracted_kwh: "heat drawn from air or ground";
+        extracted_kwh: "heat drawn from air, ground or water";
+        returned_kwh: "heat put back into the ground";
         machine_space_electricity_kwh: "of the machine's electricity, that used for the rooms";
         machine_water_electricity_kwh: "of the machine's electricity, that used for hot water";
         compressor_kwh: "electricity of the compressor and its drive";
-        source_side_kwh: "electricity of the fan or the brine pump";
+        source_side_kwh: "electricity of the fan, or of the pumps of brine and well";
         defrost_kwh: "electricity charged to defrosting";
         allowance_kwh: "electricity added as the allowance from laboratory to home";
         idle_kwh: "electricity of the machine at rest";

@@ -94,9 +94,12 @@ pub fn step<P: Probe>(
         home.fabric
             .heat_to_reach_kwh(state.room_c, target_c, outdoor_c, gains_kw)
     };
-    row.space_wanted_kwh = reach(set_point_c);
+    let wanted_kw = home
+        .fabric
+        .heat_wanted_kw(state.room_c, set_point_c, outdoor_c, gains_kw);
+    row.space_wanted_kwh = wanted_kw;
     let rooms = Rooms {
-        wanted_kwh: row.space_wanted_kwh.min(home.emitters.greatest_output_kw()),
+        wanted_kw: wanted_kw.min(home.emitters.greatest_output_kw()),
         least_kwh: reach(plan.backup_below_c[hour]),
         room_c: state.room_c,
     };
@@ -104,13 +107,14 @@ pub fn step<P: Probe>(
     // What answers.
     match &system.heating {
         Heating::HeatPump(system) => {
-            let offer = system.source.offer(hour, outdoor_c);
+            let offer = system.source.offer(hour, outdoor_c, &state.ground);
             let cold = ColdSide {
                 open_c: offer.open_c,
                 k_per_kw: offer.k_per_kw,
                 relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
             };
             heat_pump_hour(system, home, &cold, &water, &rooms, &mut row, probe);
+            ground_hour(hour, system, state, &mut row);
         }
         Heating::Boiler {
             boiler,
@@ -119,7 +123,7 @@ pub fn step<P: Probe>(
             boiler_hour(boiler, *fixed_flow_c, home, &water, &rooms, &mut row);
         }
         Heating::Hybrid(hybrid) => {
-            let offer = hybrid.machine.source.offer(hour, outdoor_c);
+            let offer = hybrid.machine.source.offer(hour, outdoor_c, &state.ground);
             let cold = ColdSide {
                 open_c: offer.open_c,
                 k_per_kw: offer.k_per_kw,
@@ -134,10 +138,11 @@ pub fn step<P: Probe>(
                 rooms: &rooms,
             };
             hybrid_hour(hybrid, &asked, &mut row, probe);
+            ground_hour(hour, &hybrid.machine, state, &mut row);
         }
         Heating::DirectElectric { output_kw } => {
             row.heater_water_kwh = water.wanted_kwh.min(*output_kw);
-            row.heater_space_kwh = rooms.wanted_kwh.min(output_kw - row.heater_water_kwh);
+            row.heater_space_kwh = rooms.wanted_kw.min(output_kw - row.heater_water_kwh);
             row.heater_electricity_kwh = row.heater_water_kwh + row.heater_space_kwh;
         }
     }
@@ -180,8 +185,8 @@ pub(super) fn charge_energy(plan: &Plan, hour: usize, row: &mut Row) {
 /// What the rooms want in an hour.
 #[derive(Clone, Copy)]
 pub(super) struct Rooms {
-    /// Heat that holds the set point, as far as the emitters can carry it, kWh.
-    pub wanted_kwh: f64,
+    /// Heat that holds the set point or leads back to it, as far as the emitters can carry it, kW.
+    pub wanted_kw: f64,
     /// Heat that keeps them above the point where backup helps, kWh.
     pub least_kwh: f64,
     /// Their temperature at the beginning of the hour, °C.
@@ -227,6 +232,14 @@ fn store_hour(home: &Home, water: &StoreStep, state: &mut State, row: &mut Row) 
     row.store_c = Some(state.store_c);
 }
 
+/// Tells the source what was drawn, and charges its pump.
+fn ground_hour(hour: usize, system: &MachineSystem, state: &mut State, row: &mut Row) {
+    let source = &system.source;
+    source.drawn(hour, row.extracted_kwh, &mut state.ground);
+    row.source_side_kwh += source.pump_kwh(hour, row.running_hours);
+    row.returned_kwh = source.returned_kwh(hour);
+}
+
 /// A heat pump: a block of hot water first, the rooms in what is left of the hour, backup for what is missing.
 pub(super) fn heat_pump_hour<P: Probe>(
     system: &MachineSystem,
@@ -242,18 +255,20 @@ pub(super) fn heat_pump_hour<P: Probe>(
         let used = hot_water_block(system, home, cold, water, row, probe);
         hours_left -= used;
     }
-    if rooms.wanted_kwh > 0.0 {
+    if rooms.wanted_kw > 0.0 {
         if hours_left > LEAST_RUN_H {
-            let asked_kw = (rooms.wanted_kwh / hours_left).min(home.emitters.greatest_output_kw());
-            let warm = home.emitters.at_load(asked_kw, rooms.room_c);
-            let duty = Duty {
-                heat_kw: asked_kw,
-                flow_c: warm.flow_c,
-                spread_k: warm.flow_c - warm.return_c,
-                hours: hours_left,
-                at_full_output: false,
+            // What hot water took from the hour is left to the fabric's storage: a compensated flow is not raised for it.
+            let ask = |heat_kw: f64| {
+                let warm = home.emitters.at_load(heat_kw, rooms.room_c);
+                Duty {
+                    heat_kw,
+                    flow_c: warm.flow_c,
+                    spread_k: warm.flow_c - warm.return_c,
+                    hours: hours_left,
+                    at_full_output: false,
+                }
             };
-            let delivered = system.machine.deliver(cold, &duty);
+            let (duty, delivered) = in_balance(system, cold, rooms.wanted_kw, ask);
             probe.see(DutyKind::SpaceHeat, cold, &duty, &delivered);
             row.machine_space_kwh = delivered.heat_kwh;
             row.machine_space_electricity_kwh = charge(row, &delivered);
@@ -268,12 +283,41 @@ pub(super) fn heat_pump_hour<P: Probe>(
         row.circulation_kwh = system.circulation_kw * hours_left;
     }
     let idle = system.machine.idle();
-    let at_rest_kw = if row.running_hours > 0.0 || rooms.wanted_kwh > 0.0 {
+    let at_rest_kw = if row.running_hours > 0.0 || rooms.wanted_kw > 0.0 {
         idle.thermostat_off_kw
     } else {
         idle.standby_kw + idle.crankcase_kw
     };
     row.idle_kwh = at_rest_kw * (1.0 - row.running_hours).max(0.0);
+}
+
+/// The machine in balance with the emitters: where it cannot give what is asked, the flow is what the emitters need for the heat it
+/// does give, which is more at the lower flow.
+fn in_balance(
+    system: &MachineSystem,
+    cold: &ColdSide,
+    wanted_kw: f64,
+    ask: impl Fn(f64) -> Duty,
+) -> (Duty, Delivered) {
+    /// Heat asked and heat given agree to this share.
+    const TOLERANCE: f64 = 1e-4;
+    /// Substitutions; output falls by a few percent over the kelvins in question, so each gains more than a digit.
+    const MOST: usize = 12;
+    let mut duty = ask(wanted_kw);
+    let mut delivered = system.machine.deliver(cold, &duty);
+    for _ in 0..MOST {
+        let given_kw = delivered.heat_kwh / duty.hours;
+        let short = delivered.flags.short && given_kw > 0.0;
+        if !short || given_kw >= duty.heat_kw * (1.0 - TOLERANCE) {
+            break;
+        }
+        duty = ask(given_kw);
+        // Asked for what it gave at a hotter flow, it could give more: its greatest output at this flow is the next guess.
+        let greatest_kw = system.machine.greatest_output_kw(cold, duty.flow_c);
+        duty = ask(greatest_kw.clamp(given_kw, wanted_kw));
+        delivered = system.machine.deliver(cold, &duty);
+    }
+    (duty, delivered)
 }
 
 /// Flow minus return while the machine runs: the design water flow carries the heat of the running time.
@@ -345,7 +389,11 @@ fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
     row.running_hours += delivered.running_hours;
     row.starts += delivered.starts;
     if delivered.running_hours > 0.0 {
-        row.source_c = Some(delivered.source_c);
+        // Of two duties in the hour the colder: what the source had to bear.
+        row.source_c = Some(
+            row.source_c
+                .map_or(delivered.source_c, |c| c.min(delivered.source_c)),
+        );
     }
     row.flags |= Flags::CYCLING.when(delivered.flags.cycling)
         | Flags::FLOW_CAPPED.when(delivered.flags.capped_flow)
@@ -377,9 +425,7 @@ pub(super) fn boiler_hour(
         .as_ref()
         .is_some_and(|water| water.store.is_some());
     row.fuel_kwh = row.heater_water_kwh / boiler.water_efficiency(has_store);
-    row.heater_space_kwh = rooms
-        .wanted_kwh
-        .min(boiler.output_kw - row.heater_water_kwh);
+    row.heater_space_kwh = rooms.wanted_kw.min(boiler.output_kw - row.heater_water_kwh);
     if row.heater_space_kwh > 0.0 {
         let follows = home.emitters.at_load(row.heater_space_kwh, rooms.room_c);
         // Fixed: it fires at its set flow with the emitters' design spread and lets the valves throttle.

@@ -3,7 +3,7 @@
 use crate::heater::{Boiler, HybridRule};
 use crate::heatpump::HeatPump;
 use crate::home::Home;
-use crate::source::Source;
+use crate::source::{Memory, Source};
 
 /// A home and what heats it.
 #[derive(Debug, Clone)]
@@ -108,6 +108,8 @@ pub struct State {
     pub store_c: f64,
     /// Whether a block of hot water is under way.
     pub charging: bool,
+    /// What the ground remembers of past draws.
+    pub ground: Memory,
 }
 
 impl State {
@@ -125,6 +127,7 @@ impl State {
             room_c: set_point_c,
             store_c: store.map_or(set_point_c, |store| store.set_point_c),
             charging: false,
+            ground: Memory::default(),
         }
     }
 }

@@ -19,6 +19,10 @@ pub struct Totals<'a> {
     pub hours_backup: u32,
     /// Hours that ended short of heat.
     pub hours_short: u32,
+    /// Hours in which the machine stood because its source was outside its limits.
+    pub hours_stopped: u32,
+    /// Lowest temperature of air, brine or water entering the machine, °C; infinite when it never ran.
+    pub min_source_c: f64,
 }
 
 impl<'a> Totals<'a> {
@@ -32,6 +36,8 @@ impl<'a> Totals<'a> {
             peak_electric_kw: 0.0,
             hours_backup: 0,
             hours_short: 0,
+            hours_stopped: 0,
+            min_source_c: f64::INFINITY,
         }
     }
 
@@ -54,5 +60,7 @@ impl Sink for Totals<'_> {
         let backed = row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION);
         self.hours_backup += u32::from(backed);
         self.hours_short += u32::from(row.flags.has(Flags::SHORT));
+        self.hours_stopped += u32::from(row.flags.has(Flags::MACHINE_STOPPED));
+        self.min_source_c = self.min_source_c.min(row.source_c.unwrap_or(f64::INFINITY));
     }
 }

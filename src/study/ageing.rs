@@ -1,0 +1,103 @@
+//! The years of a buried loop: what earlier ones leave behind, and each year of its life.
+
+use super::case::{Case, Contender};
+use crate::source::Memory;
+use crate::year::{MachineSystem, Row, Sink, State, run};
+
+/// Year of the loop's life that a comparison shows when the brief does not say: the fall of the ground is by then nearly done
+/// (a single bore falls as much again from year 1 to 2 as from 10 to 25), and most of its life is like it. A choice of ours.
+pub const SHOWN_YEAR: u32 = 15;
+
+/// The ground as earlier years leave it to the year that is shown.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Aged {
+    /// Year that is shown, from 1.
+    pub year: u32,
+    /// What the ground remembers at its beginning.
+    pub memory: Memory,
+    /// Net heat drawn in a year of that history, kWh.
+    pub drawn_kwh: f64,
+    /// Whether the system was changed after the history was made, so that the history is to be scaled to the new draw.
+    pub moved: bool,
+}
+
+impl Aged {
+    /// The memory for a system that draws a number of kWh a year: the ground is linear, so the history is scaled.
+    pub fn for_draw(&self, drawn_kwh: f64) -> Memory {
+        if self.drawn_kwh > 0.0 {
+            self.memory.times(drawn_kwh / self.drawn_kwh)
+        } else {
+            self.memory
+        }
+    }
+}
+
+/// Net heat drawn from the ground.
+#[derive(Debug, Clone, Copy, Default)]
+struct Drawn(f64);
+
+impl Sink for Drawn {
+    fn take(&mut self, _: usize, row: &Row) {
+        self.0 += row.extracted_kwh - row.returned_kwh;
+    }
+}
+
+impl Contender {
+    /// Says that the system draws otherwise than when its ground was aged.
+    pub(super) fn moved(&mut self) {
+        if let Some(aged) = &mut self.aged {
+            aged.moved = true;
+        }
+    }
+
+    /// Its machine and source, where it draws on ground that remembers.
+    pub fn remembering(&self) -> Option<&MachineSystem> {
+        let machine = self.system.heating.machine()?;
+        machine.source.remembers().then_some(machine)
+    }
+}
+
+impl Case {
+    /// Ages the ground of every system that has such, so that its run shows a year of its life.
+    pub fn age_grounds(&mut self) {
+        for i in 0..self.contenders.len() {
+            let year = self.contenders[i].shown_year;
+            let aged = self.aged(&self.contenders[i], year);
+            self.contenders[i].aged = aged;
+        }
+    }
+
+    /// The ground of a system as it is at the beginning of a year of its life, from 1; nothing when it has none that remembers.
+    ///
+    /// The weather is gone through again and again, its years in their order.
+    pub fn aged(&self, contender: &Contender, year: u32) -> Option<Aged> {
+        contender.remembering()?;
+        let mut state = State::at_rest(&contender.system, contender.indoor_c);
+        let mut drawn = Drawn::default();
+        let years = year.saturating_sub(1);
+        for i in 0..years {
+            drawn = Drawn::default();
+            let (_, hours) = self.weather_year(i)?;
+            run(
+                &self.site,
+                &contender.system,
+                &contender.plan,
+                hours,
+                &mut state,
+                &mut drawn,
+            );
+        }
+        Some(Aged {
+            year,
+            memory: state.ground,
+            drawn_kwh: drawn.0,
+            moved: false,
+        })
+    }
+
+    /// The weather of a year of a loop's life, from 0.
+    pub(super) fn weather_year(&self, year: u32) -> Option<(i32, std::ops::Range<usize>)> {
+        let years = &self.site.years;
+        years.get(year as usize % years.len().max(1)).cloned()
+    }
+}
