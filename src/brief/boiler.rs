@@ -86,14 +86,16 @@ pub(super) fn kept(
             }
         }
     });
+    // A boiler of an unknown fuel is still checked, as one for gas.
     let fields = Fields {
-        fuel: fuel?,
+        fuel: fuel.unwrap_or(Fuel::Gas),
         output: &table.output,
         efficiency: &table.efficiency,
         field_factor: &table.field_factor,
         fixed_flow: &table.fixed_flow,
     };
     let (boiler, fixed_flow_c) = made(&fields, check, notes)?;
+    fuel?;
     Some(Kept {
         boiler,
         fixed_flow_c,

@@ -134,7 +134,7 @@ fn same_currency(
     check.refuse(
         &leaf.span(),
         format!(
-            "{} is paid in {}, electricity in {currency}",
+            "{} is paid in {}, the home's electricity in {currency}",
             tariff.fuel, tariff.currency
         ),
         "one currency for all tariffs of a brief",

@@ -13,16 +13,16 @@ use crate::year::{Plan, Site, State, System, Unwatched, step};
 /// Hours beyond the day that are searched with it, so that its end is not worthless.
 const BEYOND_H: usize = 12;
 /// Room temperatures of the grid.
-const ROOMS: usize = 7;
+const ROOMS: usize = 13;
 /// Store temperatures of the grid.
-const STORES: usize = 5;
+const STORES: usize = 9;
 /// The grid reaches beyond the comfort band by this much, K: sun lifts rooms, short machines let them fall.
 const ROOM_MARGIN_K: f64 = 0.5;
 /// The grid reaches below the point where the store is heated again by this much, K: a large draw within an hour.
 const STORE_MARGIN_K: f64 = 8.0;
 /// Heat left at the end of what is searched is worth the mean price over this COP. Common practice, no source.
 const TERMINAL_COP: f64 = 3.0;
-/// A kelvin below the comfort band for an hour counts like this many kilowatt-hours at the mean price. A choice of ours: it
+/// A kelvin below the point where backup helps for an hour counts like this many kilowatt-hours at the mean price. A choice of ours: it
 /// is far dearer than the heat that would have prevented it.
 const DISCOMFORT_KWH: f64 = 20.0;
 
@@ -228,7 +228,8 @@ impl<'a> Search<'a> {
             state,
             &mut Unwatched,
         );
-        let too_cool_k = (asked_c - self.shifting.rooms.below_k - row.indoor_c).max(0.0);
+        // What the household bears without shifting too: rooms dip while hot water is made.
+        let too_cool_k = (self.shifted.backup_below_c[hour] - row.indoor_c).max(0.0);
         row.energy_cost + too_cool_k * DISCOMFORT_KWH * self.mean_price.abs()
     }
 
