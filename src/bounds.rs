@@ -78,6 +78,26 @@ bounds! {
     HYSTERESIS_K = "store hysteresis", 1.0 ..= 30.0, "K";
     /// Cold-water temperature.
     COLD_WATER_C = "cold-water temperature", 0.0 ..= 30.0, "°C";
+    /// Air changes of a home.
+    AIR_CHANGES_PER_H = "air changes", 0.0 ..= 10.0, "1/h";
+    /// Heated volume of a home.
+    VOLUME_M3 = "heated volume", 20.0 ..= 10000.0, "m³";
+    /// One part of a home's heat loss.
+    PART_LOSS_W_PER_K = "part of the heat loss", 0.0 ..= 3000.0, "W/K";
+    /// Heat-loss coefficient of one room.
+    ROOM_LOSS_W_PER_K = "heat loss of a room", 0.0 ..= 500.0, "W/K";
+    /// Design heat load of one room.
+    ROOM_LOAD_KW = "heat load of a room", 0.0 ..= 20.0, "kW";
+    /// Radiators of one room at ΔT 50 K.
+    RADIATOR_KW = "radiator output at ΔT 50 K", 0.05 ..= 20.0, "kW";
+    /// Flow minus return.
+    SPREAD_K = "flow minus return", 1.0 ..= 30.0, "K";
+    /// What a buffer or low-loss header mixes away.
+    HEADER_K = "rise by a buffer or header", 0.0 ..= 15.0, "K";
+    /// Factor from a metered volume of gas to the conditions of its calorific value.
+    VOLUME_CORRECTION = "volume correction", 0.8 ..= 1.2, "";
+    /// Heat-loss coefficient per square metre of floor: from a passive house to an uninsulated cottage.
+    HEAT_LOSS_W_PER_K_M2 = "heat loss per floor area", 0.3 ..= 8.0, "W/K per m²";
     /// Coefficient of performance at a rating point.
     COP = "coefficient of performance", 1.0 ..= 12.0, "";
     /// Rated output of a machine or a backup heater.

@@ -25,6 +25,7 @@ pub mod year;
 // rank 4: what the hours add up to
 pub mod bill;
 pub mod plan;
+pub mod signature;
 // rank 5: cases side by side
 pub mod study;
 // rank 6: the contract

@@ -11,21 +11,23 @@ fn header(source: &str, refrigerant: &str, speed: &str) -> String {
     )
 }
 
-/// A monotone map, or a finding that says the points forbade it.
+/// A monotone and faithful map, or findings that say where the points forbade it.
 fn holds(sheet: &Sheet) -> Result<(), TestCaseError> {
     let Ok(fitted) = fit(sheet) else {
         return Ok(());
     };
     let pump = &fitted.heat_pump;
-    let told = fitted
-        .report
-        .findings
-        .iter()
-        .any(|f| f.what.contains("not monotone"));
-    prop_assert!(told || pump.map().is_monotone(pump.limits()));
-    let error = pump.map().error(pump.machine(), pump.limits(), 60).unwrap();
-    // Wild points make wild corrections: the shipped sheets' own bound is 0.1 %.
-    prop_assert!(error.cop < 0.01 && error.output < 0.01, "{error:?}");
+    let told = |what: &str| fitted.report.findings.iter().any(|f| f.what.contains(what));
+    prop_assert!(told("not monotone") || pump.map().is_monotone(pump.limits()));
+    // The shipped sheets' own bound is 0.1 %, tested with them; other places than those of the finding are looked at here.
+    let error = pump
+        .map()
+        .error(pump.machine(), pump.limits(), 300)
+        .unwrap();
+    prop_assert!(
+        told("map is up to") || error.cop.max(error.output) < 0.004,
+        "{error:?}"
+    );
     Ok(())
 }
 

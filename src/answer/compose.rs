@@ -3,13 +3,21 @@
 use std::collections::BTreeMap;
 
 use super::account::{bill_answers, meter_answers, shifting_answer, signal_gap};
+use super::bills::pair;
 use super::estimate::{
-    Assumption, Estimate, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer, WeatherUsed, YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer,
+    WeatherUsed, YearAnswer,
 };
+use super::home::{
+    DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomsAnswer, StoreAnswer,
+};
+use crate::home::Pattern;
 use crate::problem::{Finding, Problems, Severity};
+use crate::signature::{DailyWeather, Signature};
 use crate::source::Memory;
 use crate::study::{
-    BalancePoint, BreakEven, Case, Contender, Lever, Outcome, balance_point, break_even,
+    BalancePoint, BreakEven, Case, Contender, DesignPoint, Lever, Outcome, balance_point,
+    break_even, design_point, under_pattern,
 };
 use crate::units::Fuel;
 use crate::year::Heating;
@@ -29,6 +37,23 @@ pub struct Told {
     pub findings: Vec<Finding>,
     /// The machine of each contender, in their order.
     pub machines: Vec<Option<String>>,
+    /// The room table's verdict for each contender, in their order.
+    pub rooms: Vec<Option<RoomsAnswer>>,
+    /// Transmission and ventilation of the home as it is, W/K, where they are known apart.
+    pub parts_w_per_k: Option<(f64, f64)>,
+    /// What the meter readings say.
+    pub bills: Option<BillsTold>,
+}
+
+/// What an estimate tells about meter readings.
+#[derive(Debug, Clone, PartialEq)]
+pub struct BillsTold {
+    /// File of the readings.
+    pub file: String,
+    /// What they say.
+    pub signature: Signature,
+    /// What the heat loss of every system was multiplied by to meet them.
+    pub scaled_by: Option<f64>,
 }
 
 /// Years over which refrigerant that escapes at the end of a machine's life is spread. Common practice, no source.
@@ -56,6 +81,7 @@ impl Estimate {
 pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimate, Problems> {
     let mut findings = told.findings.clone();
     findings.extend(cool_stores(case));
+    findings.extend(hygiene_cycles(case));
     let mut systems = Vec::with_capacity(outcomes.len());
     let mut break_evens = BTreeMap::new();
     for (i, (contender, outcome)) in case.contenders.iter().zip(outcomes).enumerate() {
@@ -65,9 +91,18 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
             outcomes,
             told.machines.get(i).cloned().flatten(),
         );
+        system.rooms = told.rooms.get(i).cloned().flatten();
+        if contender.pattern != case.contenders[0].pattern {
+            let as_today = under_pattern(case, contender, &case.contenders[0].pattern)?;
+            let heat_kwh = as_today.mean_sums().space_heat_kwh();
+            system.pattern_heat_kwh = Some(system.space_heat_kwh - heat_kwh);
+            system.pattern_cost = Some(system.cost - as_today.costs.total);
+        }
         system.shifting = shifting_answer(case, contender)?;
         findings.extend(signal_gap(contender, outcome)?);
-        findings.extend(left_cold(&system));
+        findings.extend(shortfalls(&system));
+        system.ground = ground_shown(case, contender, outcome)?;
+        findings.extend(source_too_cold(&system));
         if i > 0 {
             let levers = [
                 Lever::ElectricityRate,
@@ -100,9 +135,16 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
             label: told.home_label.clone(),
             heat_loss_w_per_k: fabric.heat_loss_w_per_k(),
             design_outdoor_c: today.design_outdoor_c,
-            design_heat_load_kw: fabric.design_load_kw(today.indoor_c, today.design_outdoor_c),
+            design_heat_load_kw: today.design_load_kw,
+            transmission_w_per_k: told.parts_w_per_k.map(|parts| parts.0),
+            ventilation_w_per_k: told.parts_w_per_k.map(|parts| parts.1),
+            metered: told
+                .bills
+                .as_ref()
+                .map(|bills| metered(bills, case, &outcomes[0])),
         },
         systems,
+        patterns: Vec::new(),
         break_even: break_evens,
         currency: case.currency.code().to_owned(),
         carbon_scope: told.carbon_scope.clone(),
@@ -153,6 +195,13 @@ fn system(
             fed + reading.export_kwh.iter().sum::<f64>() / years,
         )
     });
+    let design = design_point(
+        &contender.system,
+        contender.indoor_c,
+        contender.design_outdoor_c,
+        contender.design_load_kw,
+        ground,
+    );
     SystemAnswer {
         label: contender.system.label.clone(),
         kind: contender.kind.to_owned(),
@@ -192,6 +241,13 @@ fn system(
             .fold(0.0, f64::max),
         hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
         hours_short: outcome.mean(|year| f64::from(year.hours_short)),
+        hours_water_short: outcome.mean(|year| f64::from(year.hours_water_short)),
+        pattern: contender.pattern.words(),
+        pattern_heat_kwh: None,
+        pattern_cost: None,
+        store: store(contender, &design),
+        design: design_answer(&design),
+        rooms: None,
         min_indoor_c: outcome
             .years
             .iter()
@@ -209,6 +265,8 @@ fn system(
         saving: compared(costs.total, today.costs.total),
         carbon_saving_kg: compared(sums.carbon_kg, today.mean_sums().carbon_kg),
         capital: contender.capital,
+        capital_parts: contender.capital_parts.iter().cloned().collect(),
+        ground: None,
         monthly: (0..12)
             .map(|month0| {
                 let month = outcome.mean_month(month0);
@@ -236,6 +294,34 @@ fn system(
     }
 }
 
+/// The year of a buried loop's life that is shown, beside its first.
+fn ground_shown(
+    case: &Case,
+    contender: &Contender,
+    outcome: &Outcome,
+) -> Result<Option<GroundShown>, Problems> {
+    let Some(aged) = contender.aged else {
+        return Ok(None);
+    };
+    let first = case.run_from(contender, Memory::default(), None)?;
+    let lowest = |outcome: &Outcome| {
+        let lowest_c = outcome
+            .years
+            .iter()
+            .map(|year| year.min_source_c)
+            .fold(f64::INFINITY, f64::min);
+        lowest_c.is_finite().then_some(lowest_c)
+    };
+    Ok(Some(GroundShown {
+        shown_year: aged.year,
+        lowest_brine_c: lowest(outcome),
+        hours_stopped: outcome.mean(|year| f64::from(year.hours_stopped)),
+        first_year_cost: first.costs.total,
+        first_year_spf_h4: first.mean_sums().spf_h4(),
+        first_year_lowest_brine_c: lowest(&first),
+    }))
+}
+
 fn balance_words(point: BalancePoint) -> String {
     match point {
         BalancePoint::At(c) => format!("{c:.1} °C"),
@@ -246,18 +332,54 @@ fn balance_words(point: BalancePoint) -> String {
     }
 }
 
-/// Rooms that a system leaves cold.
-fn left_cold(system: &SystemAnswer) -> Option<Finding> {
-    (system.hours_short >= 0.5).then(|| {
-        Finding::new(
+/// What a system leaves cold: rooms, taps, the design day.
+fn shortfalls(system: &SystemAnswer) -> Vec<Finding> {
+    let label = &system.label;
+    let mut found = Vec::new();
+    if system.hours_short >= 0.5 {
+        found.push(Finding::new(
             Severity::Caution,
             format!(
-                "\"{}\" leaves the rooms more than 1 K below the set point in {:.0} hours a year, down to {:.1} °C",
-                system.label, system.hours_short, system.min_indoor_c
+                "\"{label}\" leaves the rooms more than 1 K below the set point in {:.0} hours a year, down to {:.1} °C",
+                system.hours_short, system.min_indoor_c
             ),
             "a larger machine, backup heat or larger emitters would be needed; size from a room-by-room heat-loss calculation by a competent person",
-        )
-    })
+        ));
+    }
+    if system.hours_water_short >= 0.5 {
+        found.push(Finding::new(
+            Severity::Warning,
+            format!("\"{label}\" gives hot water that is too cool in {:.0} hours a year", system.hours_water_short),
+            "a larger store, a higher set point, longer reheat windows or more output would be needed",
+        ));
+    }
+    if !system.design.covered {
+        found.push(Finding::new(
+            Severity::Caution,
+            format!("\"{label}\": {}", system.design.sentence),
+            "size from a room-by-room heat-loss calculation by a competent person",
+        ));
+    }
+    found
+}
+
+/// A loop too short for its machine.
+fn source_too_cold(system: &SystemAnswer) -> Option<Finding> {
+    let ground = system
+        .ground
+        .as_ref()
+        .filter(|ground| ground.hours_stopped >= 0.5)?;
+    Some(Finding::new(
+        Severity::Caution,
+        format!(
+            "the machine of \"{}\" stands in {:.0} hours of year {} of its loop because the brine is too cold for it; backup and immersion heater use {:.0} kWh",
+            system.label,
+            ground.hours_stopped,
+            ground.shown_year,
+            system.backup_kwh.unwrap_or(0.0),
+        ),
+        "the loop is too short for this home and machine: see the command ground for the shortest one that would do",
+    ))
 }
 
 /// Stored hot water below the temperature of UK HSE guidance: 60 °C in the store, at the taps no less than 50 °C within a minute.
@@ -273,7 +395,10 @@ fn cool_stores(case: &Case) -> Option<Finding> {
                 .hot_water
                 .as_ref()
                 .and_then(|water| water.store);
-            store.is_some_and(|store| store.set_point_c < HYGIENE_C)
+            store.is_some_and(|store| {
+                let cycle_c = store.hygiene.map_or(0.0, |cycle| cycle.target_c);
+                store.set_point_c < HYGIENE_C && cycle_c < HYGIENE_C
+            })
         })
         .map(|contender| format!("\"{}\"", contender.system.label))
         .collect();
@@ -282,6 +407,28 @@ fn cool_stores(case: &Case) -> Option<Finding> {
             Severity::Caution,
             format!("hot water is stored below {HYGIENE_C:.0} °C by {}", cool.join(", ")),
             "legionella can grow there, so a regular hygiene cycle is usual, and water above 50 °C scalds; follow local rules and a licensed installer",
+        )
+    })
+}
+
+/// Stores that are made hot against legionella: the water scalds then.
+fn hygiene_cycles(case: &Case) -> Option<Finding> {
+    let hot: Vec<_> = case
+        .contenders
+        .iter()
+        .filter_map(|contender| {
+            let cycle = contender.system.home.hot_water.as_ref()?.store?.hygiene?;
+            Some(format!(
+                "\"{}\" to {:.0} °C",
+                contender.system.label, cycle.target_c
+            ))
+        })
+        .collect();
+    (!hot.is_empty()).then(|| {
+        Finding::new(
+            Severity::Caution,
+            format!("the hot-water store is heated once a week by {}", hot.join(", ")),
+            "water above 50 °C scalds: mixing valves at the taps; how often and how hot is for local rules and a licensed installer to say",
         )
     })
 }
@@ -358,4 +505,134 @@ fn condition(found: &BreakEven, value: f64) -> String {
             )
         }
     }
+}
+
+fn design_answer(design: &DesignPoint) -> DesignAnswer {
+    let margin = design.carried_kw() / design.load_kw - 1.0;
+    let margin_percent = margin * 100.0;
+    let mut sentence = format!(
+        "at {:.1} °C the load of {:.1} kW needs a flow of {:.0} °C; there it gives {:.1} kW",
+        design.outdoor_c,
+        design.load_kw,
+        design.heater_flow_c,
+        design.carried_kw()
+    );
+    if margin >= 0.0 {
+        sentence += &format!(", {margin_percent:.0} % more");
+    } else {
+        sentence += &format!(", {:.1} kW short", design.load_kw - design.carried_kw());
+        match design.backup_kw {
+            Some(backup_kw) if design.covered() => {
+                sentence += &format!(", which backup of {backup_kw:.0} kW adds");
+            }
+            Some(backup_kw) if backup_kw > 0.0 => {
+                sentence += &format!(", and backup of {backup_kw:.0} kW is not enough");
+            }
+            _ => sentence += ", and nothing adds it",
+        }
+    }
+    DesignAnswer {
+        outdoor_c: design.outdoor_c,
+        load_kw: design.load_kw,
+        flow_c: design.flow_c,
+        heater_flow_c: design.heater_flow_c,
+        output_kw: design.output_kw,
+        emitters_kw: design.emitters_kw,
+        backup_kw: design.backup_kw,
+        margin_percent,
+        covered: design.covered(),
+        water_l_per_min: design.water_l_per_min,
+        sentence,
+    }
+}
+
+fn store(contender: &Contender, design: &DesignPoint) -> Option<StoreAnswer> {
+    let water = contender.system.home.hot_water.as_ref()?;
+    let store = water.store?;
+    let cold_c = water.mean_cold_c();
+    let above_k = store.set_point_c - store.surroundings_c;
+    Some(StoreAnswer {
+        volume_l: store.volume_l(),
+        usable_l: store.usable_l(water.draw_c, cold_c),
+        drawn_at_c: water.draw_c,
+        reheat_hours: (design.output_kw > 0.0).then(|| store.reheat_h(design.output_kw, cold_c)),
+        standing_loss_kwh_per_day: store.loss_kw_per_k * above_k * 24.0,
+    })
+}
+
+/// What the readings say beside the model.
+fn metered(bills: &BillsTold, case: &Case, today: &Outcome) -> MeteredAnswer {
+    let signature = &bills.signature;
+    let days = DailyWeather::of_hours(&case.site.civil, &case.site.outdoor_c);
+    let years = case.site.years.len() as f64;
+    let fuel = signature.fuel_kwh(days.all());
+    let metered_kwh = fuel.value / years;
+    let modelled_kwh = today.mean_sums().fuel_kwh;
+    let difference_percent = (modelled_kwh / metered_kwh - 1.0) * 100.0;
+    let loss = signature.heat_loss_w_per_k;
+    let mut sentence = format!(
+        "{}: {:.0} W/K ({:.0} to {:.0}); today's fuel in this weather {metered_kwh:.0} kWh by the meter, {modelled_kwh:.0} kWh \
+         modelled ({difference_percent:+.0} %)",
+        bills.file, loss.value, loss.low, loss.high
+    );
+    if let Some(factor) = bills.scaled_by {
+        sentence += &format!(", after every heat loss was multiplied by {factor:.2}");
+    }
+    MeteredAnswer {
+        file: bills.file.clone(),
+        heat_loss_w_per_k: loss.value,
+        heat_loss_95: pair(loss),
+        base_temperature_c: signature.base_temperature_c.value,
+        metered_kwh,
+        metered_95: pair(fuel).map(|kwh| kwh / years),
+        modelled_kwh,
+        difference_percent,
+        scaled_by: bills.scaled_by,
+        sentence,
+    }
+}
+
+/// Every system all day at its set point beside a set-back: its own, else today's, else `usual`.
+///
+/// # Errors
+/// When a bill cannot be made.
+pub fn compare_patterns(case: &Case, usual: &Pattern) -> Result<Vec<PatternComparison>, Problems> {
+    let today = &case.contenders[0].pattern;
+    case.contenders
+        .iter()
+        .map(|contender| {
+            let patterns = [&contender.pattern, today, usual];
+            let set_back = patterns
+                .into_iter()
+                .find(|pattern| !pattern.is_continuous())
+                .unwrap_or(usual);
+            let continuous = Pattern::continuous(set_back.comfort_c());
+            let figures = |pattern: &Pattern| -> Result<PatternFigures, Problems> {
+                let outcome = under_pattern(case, contender, pattern)?;
+                let sums = outcome.mean_sums();
+                let burns = contender.system.heating.boiler().is_some();
+                Ok(PatternFigures {
+                    pattern: pattern.words(),
+                    space_heat_kwh: sums.space_heat_kwh(),
+                    electricity_kwh: sums.electricity_kwh(),
+                    fuel_kwh: burns.then_some(sums.fuel_kwh),
+                    cost: outcome.costs.total,
+                    hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
+                    min_indoor_c: outcome
+                        .years
+                        .iter()
+                        .map(|year| year.min_indoor_c)
+                        .fold(f64::INFINITY, f64::min),
+                })
+            };
+            let (continuous, set_back) = (figures(&continuous)?, figures(set_back)?);
+            Ok(PatternComparison {
+                label: contender.system.label.clone(),
+                more_heat_percent: (continuous.space_heat_kwh / set_back.space_heat_kwh - 1.0)
+                    * 100.0,
+                continuous,
+                set_back,
+            })
+        })
+        .collect()
 }

@@ -5,6 +5,7 @@ use std::collections::BTreeMap;
 use serde::Serialize;
 
 use super::account::{BillAnswer, MeterAnswer, ShiftingAnswer};
+use super::home::{DesignAnswer, MeteredAnswer, PatternComparison, RoomsAnswer, StoreAnswer};
 use crate::problem::Finding;
 
 /// The comparison of all systems of a brief.
@@ -16,6 +17,9 @@ pub struct Estimate {
     pub home: HomeUsed,
     /// Today's system first, then the choices in the order of the brief.
     pub systems: Vec<SystemAnswer>,
+    /// Every system all day at its set point beside a set-back, where that was asked for.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub patterns: Vec<PatternComparison>,
     /// What would make each choice cost what today's system costs, by the choice's label.
     pub break_even: BTreeMap<String, Vec<LeverAnswer>>,
     /// Currency of every amount, ISO 4217.
@@ -58,6 +62,15 @@ pub struct HomeUsed {
     pub design_outdoor_c: f64,
     /// Steady loss from the set point at the design temperature, gains not counted.
     pub design_heat_load_kw: f64,
+    /// Part of the coefficient through walls, roof, floor and windows, where it is known apart.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub transmission_w_per_k: Option<f64>,
+    /// Part of the coefficient with the air that is exchanged.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub ventilation_w_per_k: Option<f64>,
+    /// What meter readings say beside it.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub metered: Option<MeteredAnswer>,
 }
 
 /// One system: figures of a mean year.
@@ -134,8 +147,26 @@ pub struct SystemAnswer {
     pub hours_backup: f64,
     /// Hours that ended more than 1 K below the set point.
     pub hours_short: f64,
+    /// Hours in which hot water came out too cool.
+    pub hours_water_short: f64,
     /// Lowest indoor temperature of all years.
     pub min_indoor_c: f64,
+    /// When the rooms are heated.
+    pub pattern: String,
+    /// Heat to the rooms above that of the same system under today's pattern; absent when the pattern is today's.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub pattern_heat_kwh: Option<f64>,
+    /// Cost above that of the same system under today's pattern; absent when the pattern is today's.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub pattern_cost: Option<f64>,
+    /// The design point.
+    pub design: DesignAnswer,
+    /// The room table's verdict, where there is one.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub rooms: Option<RoomsAnswer>,
+    /// The hot-water store, where there is one.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub store: Option<StoreAnswer>,
     /// Starts of the compressor.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub starts: Option<f64>,
@@ -162,6 +193,12 @@ pub struct SystemAnswer {
     /// What it costs to put in.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub capital: Option<f64>,
+    /// The same part by part, where it is given so.
+    #[serde(skip_serializing_if = "BTreeMap::is_empty")]
+    pub capital_parts: BTreeMap<String, f64>,
+    /// Which year of a buried loop's life the figures are of, and what its first one comes to.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub ground: Option<GroundShown>,
     /// January to December of a mean year.
     pub monthly: Vec<MonthAnswer>,
     /// Each year of the weather.
@@ -174,6 +211,26 @@ pub struct SystemAnswer {
     /// Its bills by period, when they were asked for.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub bills: Option<Vec<BillAnswer>>,
+}
+
+/// A buried loop in the estimate: the year of its life that every figure is of, beside its first.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct GroundShown {
+    /// Year of the loop's life, from 1.
+    pub shown_year: u32,
+    /// Lowest temperature entering the machine in it.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub lowest_brine_c: Option<f64>,
+    /// Hours in which the machine stood because its source was outside its limits.
+    pub hours_stopped: f64,
+    /// Cost in the first year of its life.
+    pub first_year_cost: f64,
+    /// Seasonal performance factor with all auxiliaries in the first year.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub first_year_spf_h4: Option<f64>,
+    /// Lowest temperature entering the machine in the first year.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub first_year_lowest_brine_c: Option<f64>,
 }
 
 /// One month of a mean year.

@@ -4,9 +4,9 @@ use chrono::{SecondsFormat, TimeZone as _};
 use serde::Serialize;
 
 use super::cycle::StateAnswer;
-use crate::home::{Home, RECOVERY_H};
+use crate::home::Home;
 use crate::study::{Case, Contender, Traced, TracedDuty};
-use crate::year::{DutyKind, MachineSystem, Row};
+use crate::year::{DutyKind, Flags, MachineSystem, Row};
 
 /// One hour of one system, explained.
 #[derive(Debug, Clone, PartialEq, Serialize)]
@@ -85,7 +85,11 @@ impl Explanation {
         let local = case.time_zone.from_utc_datetime(&utc.naive_utc());
         let home = &contender.system.home;
         let mut parts = vec![weather(case, traced), rooms(home, contender, traced)];
-        parts.extend(hot_water(home, traced));
+        parts.extend(hot_water(
+            home,
+            usize::from(case.site.month0[traced.hour]),
+            traced,
+        ));
         if let Some(machine) = contender.system.heating.machine() {
             parts.extend(
                 traced
@@ -147,22 +151,26 @@ fn rooms(home: &Home, contender: &Contender, traced: &Traced) -> Part {
             row.gains_kwh - fabric.internal_gains_kw()
         ),
     );
-    let settles = fabric.recovery_heads_for_c(traced.before.room_c, row.set_point_c);
+    let (settles, within) = fabric.recovery_heads_for_c(traced.before.room_c, row.set_point_c);
     part.add(
         "temperature to head for",
         settles,
         "°C",
         format!(
-            "(set point − before × e^(−{RECOVERY_H:.0}h/τ)) / (1 − e^(−{RECOVERY_H:.0}h/τ)), τ = {:.1} h",
+            "(set point − before × e^(−{within:.0}h/τ)) / (1 − e^(−{within:.0}h/τ)), τ = {:.1} h",
             fabric.time_constant_h()
         ),
     );
-    part.add(
-        "heat wanted",
-        row.space_wanted_kwh,
-        "kWh",
-        format!("H (head for − outdoor) − gains = {loss:.3} × ({settles:.2} − {:.2}) − {:.3}, not below 0", row.outdoor_c, row.gains_kwh),
+    let now = format!(
+        "H (head for − outdoor) − gains = {loss:.3} × ({settles:.2} − {:.2}) − {:.3}, not below 0",
+        row.outdoor_c, row.gains_kwh
     );
+    let how = if row.flags.has(Flags::RECOVERY) {
+        "the even heat that brings the rooms to the next set point in time".to_owned()
+    } else {
+        now
+    };
+    part.add("heat wanted", row.space_wanted_kwh, "kWh", how);
     part.add(
         "design heat load",
         fabric.design_load_kw(contender.indoor_c, contender.design_outdoor_c),
@@ -175,18 +183,19 @@ fn rooms(home: &Home, contender: &Contender, traced: &Traced) -> Part {
     part.part("What the rooms ask")
 }
 
-fn hot_water(home: &Home, traced: &Traced) -> Option<Part> {
+fn hot_water(home: &Home, month0: usize, traced: &Traced) -> Option<Part> {
     let water = home.hot_water.as_ref()?;
     let row = &traced.row;
+    let daily_kwh = water.daily_kwh[month0];
     let mut part = lines();
     part.add(
         "drawn at the taps",
         row.water_drawn_kwh,
         "kWh",
-        format!("{:.3} kWh a day × share of the clock hour", water.daily_kwh),
+        format!("{daily_kwh:.3} kWh a day of the month × share of the clock hour"),
     );
     if let Some(store) = &water.store {
-        let before = traced.before.store_c;
+        let before = traced.before.store.mean_c;
         let after_draw =
             before - (row.water_drawn_kwh + row.store_loss_kwh) / store.capacity_kwh_per_k;
         part.add("store before", before, "°C", "end of the hour before");
@@ -244,7 +253,9 @@ fn machine_part(home: &Home, system: &MachineSystem, traced: &Traced, duty: &Tra
             let emitters = &home.emitters;
             let share = asked.heat_kw / emitters.design_load_kw();
             let room = traced.before.room_c;
-            let mean = asked.flow_c - asked.spread_k / 2.0;
+            let mean = emitters.at_load(asked.heat_kw, room).mean_c();
+            let follows = mean + asked.spread_k / 2.0;
+            let header = emitters.header_k();
             part.add(
                 "mean water needed",
                 mean,
@@ -268,10 +279,19 @@ fn machine_part(home: &Home, system: &MachineSystem, traced: &Traced, duty: &Tra
                 "flow needed",
                 asked.flow_c,
                 "°C",
-                format!(
-                    "mean water + half the spread = {mean:.2} + {:.2}",
-                    asked.spread_k / 2.0
-                ),
+                if (asked.flow_c - header - follows).abs() < 1e-6 {
+                    let half = asked.spread_k / 2.0;
+                    let mixed = if header > 0.0 {
+                        format!(" + header {header:.1}")
+                    } else {
+                        String::new()
+                    };
+                    format!("mean water + half the spread = {mean:.2} + {half:.2}{mixed}")
+                } else {
+                    format!(
+                        "set by the control; {follows:.2} °C would carry it, the valves throttle"
+                    )
+                },
             );
         }
         DutyKind::HotWater => {

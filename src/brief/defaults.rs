@@ -38,7 +38,19 @@ defaults! {
     HOT_WATER_DAILY = "home.hot_water.daily_energy", "4 kWh",
         "typical UK use (published field figure, secondary source)";
     DRAWN_AT = "home.hot_water.drawn_at", "40 °C", "convention of Regulation (EU) No 811/2013 draws";
-    COLD_WATER = "home.hot_water.cold", "10 °C", "common practice, no source";
+    COLD_WATER = "home.hot_water.cold", "10 °C", "common practice, no source; used when the weather is no whole year";
+    USABLE = "home.hot_water.usable", "80 %", "common practice, no source";
+    HYGIENE_TEMPERATURE = "home.hot_water.hygiene_temperature", "60 °C", "UK HSE guidance for stored hot water";
+    HYGIENE_DAY = "home.hot_water.hygiene_day", "sunday", "common practice, no source";
+    SET_BACK = "home.pattern.set_back", "16 °C", "common practice, no source";
+    WARM_UP = "home.pattern.warm_up", "in time", "common practice, no source";
+    ROOM_SPREAD = "home.emitters.spread", "8 K", "beside a room table: EN 14511 spread at 55 °C, common practice, no source";
+    BILLS_EFFICIENCY = "home.bills.efficiency", "82 % gross",
+        "homes lie between 75 and 85 % gross (published field figures, secondary source)";
+    BILLS_EFFICIENCY_WITHIN = "home.bills.efficiency_within", "5 %", "the same published range";
+    HOT_WATER_SHARE = "home.bills.hot_water_share", "85 %", "common practice, no source: the rest is cooking";
+    HOT_WATER_SHARE_WITHIN = "home.bills.hot_water_share_within", "15 %", "common practice, no source";
+    VOLUME_CORRECTION = "home.bills.volume_correction", "1.02264", "British gas bills";
     STORE = "home.hot_water.store", "200 L", "common practice, no source";
     SET_POINT = "home.hot_water.setpoint", "50 °C", "common practice, no source";
     HYSTERESIS = "home.hot_water.hysteresis", "5 K", "common practice, no source";

@@ -4,9 +4,11 @@ use std::collections::HashMap;
 use std::path::Path;
 use std::sync::Arc;
 
+use chrono::Datelike;
 use chrono_tz::Tz;
 use schemars::Schema;
 
+use super::bills::{BillsMade, Over, named, of_file};
 use super::energy::{Energy, energy};
 use super::files::Folder;
 use super::home::WeatherFacts;
@@ -15,11 +17,14 @@ use super::raw;
 use super::system::{Surroundings, contender};
 use super::weather::weather;
 use super::{defaults, demo};
-use crate::answer::Told;
+use crate::answer::{Assumption, BillsTold, Told};
 use crate::calendar::CivilHour;
 use crate::document::{Check, Document, Section, read_text};
 use crate::problem::Problems;
-use crate::study::Case;
+use crate::signature::DailyWeather;
+use crate::source::{AnnualSwing, undisturbed_c};
+use crate::study::{Case, scale_to_fuel};
+use crate::units::{Diffusivity, parse};
 use crate::weather::Weather;
 use crate::year::Site;
 
@@ -51,6 +56,14 @@ impl Brief {
         let folder = Folder::Embedded(demo::FOLDER);
         let text = folder.text(demo::BRIEF)?;
         Self::parse(&folder.name(demo::BRIEF), &text, &folder)
+    }
+
+    /// What a file of meter readings says about the home of a brief, with what was assumed.
+    ///
+    /// # Errors
+    /// Every problem of the file, of the brief's home and weather, and readings that show no heating.
+    pub fn bills(file: &Path, brief: &Path) -> Result<(BillsMade, Vec<Assumption>), Problems> {
+        of_file(file, brief)
     }
 
     /// JSON Schema of a brief.
@@ -95,23 +108,44 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         WeatherFacts {
             design_c: -5.0,
             has_radiation: true,
+            main_c: None,
         },
         facts,
     );
     let mut contenders = Vec::new();
     let mut machines = Vec::new();
+    let mut rooms = Vec::new();
+    let mut parts_w_per_k = None;
     let mut findings = weather
         .as_ref()
         .map_or_else(Vec::new, |weather| weather.findings.clone());
     if let Some(energy) = &energy {
         findings.extend(energy.supplies().flat_map(|supply| supply.findings.clone()));
     }
+    let bills = weather.as_ref().zip(zone).and_then(|(weather, zone)| {
+        let today = raw.today.as_ref();
+        let today_efficiency =
+            today.and_then(|today| today.efficiency.as_ref()?.value().ok().copied());
+        let home = raw.home.as_ref();
+        let over = Over {
+            home,
+            today_efficiency,
+            weather,
+            facts: &facts,
+            zone,
+            folder,
+        };
+        named(&over, check, &mut notes)
+    });
+    let bills = bills.flatten();
+    findings.extend(bills.iter().flat_map(|bills| bills.findings.clone()));
     if let Some(home) = &raw.home {
         let systems = raw.today.iter().map(|today| (today, true));
         for (table, today) in systems.chain(raw.choice.iter().map(|choice| (choice, false))) {
             let surroundings = Surroundings {
                 home,
                 facts: &facts,
+                bills: bills.as_ref(),
                 site: site.as_deref(),
                 energy: energy.as_ref(),
                 folder,
@@ -120,7 +154,16 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             if let Some(made) = contender(table, &surroundings, check, &mut notes) {
                 contenders.push(made.contender);
                 machines.push(made.machine);
-                findings.extend(made.findings);
+                rooms.push(made.rooms);
+                if today {
+                    parts_w_per_k = made.parts_w_per_k;
+                }
+                // What is true of the home is found again with every system: once is enough.
+                for finding in made.findings {
+                    if !findings.contains(&finding) {
+                        findings.push(finding);
+                    }
+                }
             }
         }
     }
@@ -136,6 +179,10 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         currency,
         contenders,
     };
+    let bills = match bills {
+        Some(bills) if check.problems().is_empty() => Some(scaled(bills, &mut case, check)?),
+        _ => None,
+    };
     case.age_grounds();
     Some(Brief {
         case,
@@ -146,11 +193,29 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             assumptions: notes.into_vec(),
             findings,
             machines,
+            rooms,
+            parts_w_per_k,
+            bills,
         },
     })
 }
 
-fn time_zone(
+/// What the readings tell, the case scaled to them where the brief asks for it.
+fn scaled(bills: BillsMade, case: &mut Case, check: &mut Check) -> Option<BillsTold> {
+    let days = DailyWeather::of_hours(&case.site.civil, &case.site.outdoor_c);
+    let fuel_kwh = bills.signature.fuel_kwh(days.all()).value / case.site.years.len() as f64;
+    let scaled_by = match bills.scale {
+        true => Some(check.take(scale_to_fuel(case, fuel_kwh))?),
+        false => None,
+    };
+    Some(BillsTold {
+        file: bills.file,
+        signature: bills.signature,
+        scaled_by,
+    })
+}
+
+pub(super) fn time_zone(
     home: Option<&Section<raw::Home>>,
     check: &mut Check,
     notes: &mut Notes,
@@ -190,7 +255,7 @@ fn site(weather: &Weather, zone: Tz) -> Site {
     }
 }
 
-fn facts(weather: &Weather) -> WeatherFacts {
+pub(super) fn facts(weather: &Weather) -> WeatherFacts {
     /// Share of the hours that are colder than the design temperature.
     const COLDER: f64 = 0.004;
     let mut sorted = weather.outdoor_c.clone();
@@ -199,7 +264,29 @@ fn facts(weather: &Weather) -> WeatherFacts {
     WeatherFacts {
         design_c: sorted.get(place).copied().unwrap_or(0.0),
         has_radiation: weather.global_w_per_m2.is_some(),
+        main_c: main_c(weather),
     }
+}
+
+/// Ground at the depth of a water main in the middle of each month, °C.
+fn main_c(weather: &Weather) -> Option<[f64; 12]> {
+    /// Depth of a water main, m. Common practice, no source.
+    const DEPTH_M: f64 = 1.0;
+    /// Water does not come frozen, °C.
+    const LEAST_C: f64 = 4.0;
+    const HOURS_PER_MONTH: f64 = 8760.0 / 12.0;
+    let wave = AnnualSwing::fit(&weather.outdoor_c)?;
+    let diffusivity = parse::<Diffusivity>(defaults::SOIL_DIFFUSIVITY.value)
+        .ok()?
+        .m2_per_s();
+    // The axis may begin in any month: its first hour stands for the middle of the month it lies in.
+    let first0 = weather.axis.start.month0() as usize;
+    let mut months = [0.0; 12];
+    for i in 0..12 {
+        let hour = (i as f64 + 0.5) * HOURS_PER_MONTH;
+        months[(first0 + i) % 12] = undisturbed_c(&wave, DEPTH_M, diffusivity, hour).max(LEAST_C);
+    }
+    Some(months)
 }
 
 /// Results are named by label: each must be there once.

@@ -4,23 +4,26 @@ use std::sync::Arc;
 
 use rust_decimal::prelude::ToPrimitive as _;
 
+use super::bills::BillsMade;
 use super::boiler::{Kept, boiler, kept};
 use super::defaults;
 use super::energy::{Energy, Supply};
 use super::files::Folder;
 use super::ground::{Ground, ground, whole_within};
 use super::home::{Warm, WeatherFacts, warm_side};
+use super::leaves::Capital;
 use super::machine::{MachineMade, machine};
 use super::notes::Notes;
 use super::raw::{Home, SystemKind, SystemTable};
 use super::shifting::{shifted, shifting};
+use crate::answer::RoomsAnswer;
 use crate::bounds;
 use crate::carbon::Leakage;
 use crate::document::{Check, Leaf, Section};
-use crate::plan::steady;
+use crate::plan::{Ability, following};
 use crate::problem::Finding;
-use crate::source::Source;
-use crate::study::{Beside, Contender, SHOWN_YEAR};
+use crate::source::{Memory, Source};
+use crate::study::{Beside, Contender, SHOWN_YEAR, design_point};
 use crate::tariff::Metering;
 use crate::units::{Fuel, Money, TemperatureDifference, parse};
 use crate::year::{Heating, HybridSystem, MachineSystem, Metered, Plan, Site, State, System, run};
@@ -29,6 +32,7 @@ use crate::year::{Heating, HybridSystem, MachineSystem, Metered, Plan, Site, Sta
 pub(super) struct Surroundings<'a> {
     pub home: &'a Section<Home>,
     pub facts: &'a WeatherFacts,
+    pub bills: Option<&'a BillsMade>,
     pub site: Option<&'a Site>,
     pub energy: Option<&'a Energy>,
     pub folder: &'a Folder,
@@ -40,6 +44,10 @@ pub(super) struct Made {
     pub contender: Contender,
     /// Its machine, where it has one.
     pub machine: Option<String>,
+    /// The room table's verdict, where there is one.
+    pub rooms: Option<RoomsAnswer>,
+    /// Transmission and ventilation, W/K, where they are known apart.
+    pub parts_w_per_k: Option<(f64, f64)>,
     pub findings: Vec<Finding>,
 }
 
@@ -64,7 +72,15 @@ pub(super) fn contender(
         "\"air-source\"",
     );
     let kind = kind.map(|(kind,)| kind);
-    let warm = warm_side(around.home, table, kind, around.facts, check, notes);
+    let warm = warm_side(
+        around.home,
+        table,
+        kind,
+        around.facts,
+        around.bills,
+        check,
+        notes,
+    );
     let capital = capital(table, around.energy, check);
     let shown_year = shown_year(table, check);
     let kind = kind?;
@@ -101,17 +117,32 @@ pub(super) fn contender(
     if heating.machine().is_some() {
         notes.used(&defaults::BACKUP_BAND);
     }
+    let (machine, mut findings) =
+        made.map_or((None, Vec::new()), |made| (Some(made.label), made.findings));
+    findings.extend(warm.findings);
+    findings.append(&mut supplies.findings);
     let system = System {
         label,
         home: warm.home,
         heating,
     };
+    let design = design_point(
+        &system,
+        warm.indoor_c,
+        warm.design_outdoor_c,
+        warm.design_load_kw,
+        Memory::default(),
+    );
+    let ability = Ability {
+        output_kw: design.carried_kw(),
+        backup_band_k: band_k,
+    };
     let fuel_signal = supplies.fuel.as_ref().map(|fuel| fuel.signal.clone());
     let plan = |electricity: &Supply| {
-        steady(
-            site.outdoor_c.len(),
-            warm.indoor_c,
-            band_k,
+        following(
+            &warm.pattern,
+            &site.civil,
+            ability,
             electricity.signal.clone(),
             fuel_signal.clone(),
         )
@@ -138,9 +169,7 @@ pub(super) fn contender(
         }
     };
     let leakage = leakage(table, system.heating.machine(), check, notes);
-    let (machine, mut findings) =
-        made.map_or((None, Vec::new()), |made| (Some(made.label), made.findings));
-    findings.append(&mut supplies.findings);
+    let capital = capital?;
     Some(Made {
         contender: Contender {
             kind: kind.word(),
@@ -156,11 +185,17 @@ pub(super) fn contender(
             leakage,
             indoor_c: warm.indoor_c,
             design_outdoor_c: warm.design_outdoor_c,
-            capital: capital?,
+            design_load_kw: warm.design_load_kw,
+            pattern: warm.pattern,
+            ability,
+            capital: capital.whole,
+            capital_parts: capital.parts,
             shown_year: shown_year?,
             aged: None,
         },
         machine,
+        rooms: warm.rooms,
+        parts_w_per_k: warm.parts_w_per_k,
         findings,
     })
 }
@@ -287,34 +322,58 @@ fn leakage(
     })
 }
 
-/// Money for the parts; nothing when it is wrong, nothing inside when it is not given.
-#[allow(
-    clippy::option_option,
-    reason = "outer: could not be read; inner: not given"
-)]
-fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> Option<Option<f64>> {
+/// What a system costs to put in.
+#[derive(Debug, Default)]
+struct PutIn {
+    /// Everything; nothing when it is not given.
+    whole: Option<f64>,
+    /// Part by part, where it is given so.
+    parts: Vec<(String, f64)>,
+}
+
+/// Money for the whole and for the parts; nothing when it is wrong.
+fn capital(table: &SystemTable, energy: Option<&Energy>, check: &mut Check) -> Option<PutIn> {
     let Some(leaf) = &table.capital else {
-        return Some(None);
-    };
-    let text = check.value(&table.capital)?;
-    let money = match Money::parse(&text) {
-        Ok(money) => money,
-        Err(problem) => {
-            check.refuse(&leaf.span(), problem.found, problem.allowed, problem.remedy);
-            return None;
-        }
+        return Some(PutIn::default());
     };
     let currency = energy?.currency;
-    if money.currency != currency {
-        check.refuse(
-            &leaf.span(),
-            format!("{money}"),
-            format!("an amount in {currency}, as the tariffs are"),
-            "convert it",
-        );
-        return None;
+    let mut amount = |text: &str| -> Option<f64> {
+        let money = match Money::parse(text) {
+            Ok(money) => money,
+            Err(problem) => {
+                check.refuse(&leaf.span(), problem.found, problem.allowed, problem.remedy);
+                return None;
+            }
+        };
+        if money.currency != currency {
+            check.refuse(
+                &leaf.span(),
+                format!("{money}"),
+                format!("an amount in {currency}, as the tariffs are"),
+                "convert it",
+            );
+            return None;
+        }
+        money.amount.to_f64()
+    };
+    match leaf.value() {
+        Ok(Capital::Whole(text)) => Some(PutIn {
+            whole: Some(amount(text)?),
+            parts: Vec::new(),
+        }),
+        Ok(Capital::Parts(parts)) => {
+            let read = parts
+                .iter()
+                .map(|(name, text)| amount(text).map(|money| (name.clone(), money)));
+            let parts = read.collect::<Option<Vec<_>>>()?;
+            let whole = Some(parts.iter().map(|part| part.1).sum());
+            Some(PutIn { whole, parts })
+        }
+        Err(_) => {
+            check.value(&table.capital);
+            None
+        }
     }
-    Some(money.amount.to_f64())
 }
 
 /// Year of a buried loop's life that is shown.

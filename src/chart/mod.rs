@@ -40,6 +40,7 @@ mod scene;
 
 mod annual_cost;
 mod break_even;
+mod brine_life;
 mod brine_year;
 mod carbon_by_system;
 mod carpet;
@@ -53,10 +54,12 @@ mod load_duration;
 mod machine_performance;
 mod monthly;
 mod pressure_enthalpy;
+mod signature;
 mod swings;
 
 pub use annual_cost::{AnnualCost, SystemCost, annual_cost};
 pub use break_even::{BreakEven, BreakEvenLine, break_even};
+pub use brine_life::{BrineLife, brine_life};
 pub use brine_year::{BrineLine, BrineYear, brine_year};
 pub use carbon_by_system::{CarbonBySystem, SystemCarbon, carbon_by_system};
 pub use carpet::{Carpet, Spell, calendar_months, carpet};
@@ -77,6 +80,7 @@ pub use paint::PNG_PIXELS;
 pub use palette::Colour;
 pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
 pub use scene::WIDTH;
+pub use signature::{MeterPoint, SignaturePlot, signature_plot};
 pub use swings::{Swing, Swings, swings};
 
 use std::fmt;

@@ -3,11 +3,13 @@
 use std::path::PathBuf;
 
 use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
-use crate::answer::{Estimate, compose};
+use crate::answer::{Estimate, compare_patterns, compose};
 use crate::brief::{Brief, DEFAULTS};
 use crate::chart::{AnnualCost, Marks, SystemCost, annual_cost};
-use crate::report::{accounts_text, estimate_text, ledger_csv};
-use crate::study::bills;
+use crate::home::Pattern;
+use crate::problem::Problems;
+use crate::report::{accounts_text, estimate_text, home_text, ledger_csv, patterns_text};
+use crate::study::{Outcome, bills};
 use crate::year::Ledger;
 
 /// Yearly cost and carbon of every system of a brief, beside what heats the home today.
@@ -37,6 +39,12 @@ pub struct Args {
     /// Print the bills of every system, and what its meters should read.
     #[arg(long)]
     bills: bool,
+    /// Also say each system's design point, rooms, store and running pattern.
+    #[arg(long)]
+    home: bool,
+    /// Also run every system all day at its set point beside a set-back.
+    #[arg(long)]
+    patterns: bool,
     /// Print every default with its source, and stop.
     #[arg(long)]
     show_defaults: bool,
@@ -72,6 +80,9 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     if args.bills {
         estimate = estimate.with_bills(&brief.case, &outcomes)?;
     }
+    if args.patterns {
+        estimate.patterns = compare_patterns(&brief.case, &usual_pattern())?;
+    }
     if let Some(folder) = &args.out {
         let mut files = pictures(&estimate, folder)?;
         for (i, (contender, ledger)) in brief.case.contenders.iter().zip(&ledgers).enumerate() {
@@ -92,19 +103,47 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     warn(&estimate.findings);
     match args.format {
         Format::Json => print_json(&estimate),
-        Format::Text if args.bills => {
-            let contenders = brief.case.contenders.iter().zip(&outcomes);
-            let bills = contenders
-                .map(|(contender, outcome)| bills(contender, outcome))
-                .collect::<Result<Vec<_>, _>>()?;
-            let accounts = accounts_text(&estimate, &bills);
-            print(&format!(
-                "{}\n\n{accounts}",
-                estimate_text(&estimate, args.assumptions)
-            ))
+        Format::Text => {
+            let mut text = text(&estimate, args);
+            if args.bills {
+                text += &format!("\n\n{}", accounts(&estimate, &brief, &outcomes)?);
+            }
+            print(&text)
         }
-        Format::Text => print(&estimate_text(&estimate, args.assumptions)),
     }
+}
+
+/// The bills of every system and what its meters should read.
+fn accounts(estimate: &Estimate, brief: &Brief, outcomes: &[Outcome]) -> Result<String, Problems> {
+    let contenders = brief.case.contenders.iter().zip(outcomes);
+    let bills = contenders
+        .map(|(contender, outcome)| bills(contender, outcome))
+        .collect::<Result<Vec<_>, _>>()?;
+    Ok(accounts_text(estimate, &bills))
+}
+
+fn text(estimate: &Estimate, args: &Args) -> String {
+    let mut text = estimate_text(estimate, args.assumptions);
+    if args.home {
+        text += &format!("\n\n{}", home_text(estimate));
+    }
+    if args.patterns {
+        text += &format!("\n\n{}", patterns_text(estimate));
+    }
+    text
+}
+
+/// A set-back for briefs that have none: 7 to 9 and 16 to 23 h on working days, 7 to 23 h at weekends, 20 °C and 16 °C between.
+///
+/// The hours are those of the British standard assessment (SAP 10, table 9) \[from memory\]; the set-back is common practice.
+fn usual_pattern() -> Pattern {
+    let mut pattern = Pattern::continuous(20.0);
+    for hour in 0..24 {
+        let weekday = (7..9).contains(&hour) || (16..23).contains(&hour);
+        pattern.weekday_c[hour] = if weekday { 20.0 } else { 16.0 };
+        pattern.weekend_c[hour] = if (7..23).contains(&hour) { 20.0 } else { 16.0 };
+    }
+    pattern
 }
 
 fn pictures(estimate: &Estimate, folder: &std::path::Path) -> Result<Vec<NewFile>, Failure> {

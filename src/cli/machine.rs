@@ -53,7 +53,8 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     let fitted = fit(&sheet)?;
     let machine = &fitted.heat_pump;
     let left_out = leave_one_out(&sheet)?;
-    let mut findings = fitted.report.findings.clone();
+    let mut findings = machine.cautions();
+    findings.extend(fitted.report.findings.iter().cloned());
     let at = match &args.at {
         Some(text) => Some(operating(
             machine,
@@ -74,8 +75,10 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     let answer = MachineAnswer::new(&sheet, &fitted, &left_out, map_percent, at, findings);
     match args.format {
         Format::Text => {
-            warn(&answer.findings);
-            print(&text(&sheet, &fitted, &answer))
+            let (cautions, odd): (Vec<_>, Vec<_>) = (answer.findings.iter().cloned())
+                .partition(|finding| finding.severity == Severity::Caution);
+            warn(&odd);
+            print(&text(&sheet, &fitted, &answer, &cautions))
         }
         Format::Json => print_json(&answer),
     }
@@ -288,7 +291,7 @@ fn picture(sheet: &Sheet, fitted: &Fitted, path: &Path) -> Result<NewFile, Failu
     Ok(NewFile::new(path, content))
 }
 
-fn text(sheet: &Sheet, fitted: &Fitted, answer: &MachineAnswer) -> String {
+fn text(sheet: &Sheet, fitted: &Fitted, answer: &MachineAnswer, cautions: &[Finding]) -> String {
     let letter = sheet.letter();
     let (source_c, flow_c) = sheet.rated_condition();
     let mut lines = vec![
@@ -329,6 +332,7 @@ fn text(sheet: &Sheet, fitted: &Fitted, answer: &MachineAnswer) -> String {
             answer.field_factor
         ),
     ]);
+    lines.extend(cautions.iter().map(ToString::to_string));
     lines.join("\n")
 }
 

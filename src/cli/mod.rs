@@ -4,15 +4,18 @@
 //! `run(&Args) -> Result<(), Failure>`. Text goes to stdout, findings and progress to stderr, and the exit status is 0
 //! done, 1 the input is wrong, 2 usage, 3 cannot write.
 
+mod bills;
 mod cycle;
 mod estimate;
 mod explain;
 mod failure;
 mod files;
+mod ground;
 mod machine;
 mod output;
 mod rating;
 mod tariff;
+mod weather;
 
 use std::process::ExitCode;
 
@@ -38,11 +41,14 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Estimate(estimate::Args),
+    Bills(bills::Args),
     Explain(explain::Args),
     Cycle(cycle::Args),
     Machine(machine::Args),
     Rating(rating::Args),
     Tariff(tariff::Args),
+    Ground(ground::Args),
+    Weather(weather::Args),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -57,10 +63,13 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
+        Command::Bills(args) => bills::run(args),
         Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
         Command::Machine(args) => machine::run(args),
         Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
+        Command::Ground(args) => ground::run(args),
+        Command::Weather(args) => weather::run(args),
     }
 }

@@ -27,7 +27,8 @@ struct Field {
 
 impl Field {
     /// The surface through residuals (relative, any size); what exceeds the bound is cut off.
-    fn through(places: Vec<[f64; 3]>, residuals: &[f64]) -> Self {
+    fn through(residuals: impl Iterator<Item = ([f64; 3], f64)>) -> Self {
+        let (places, residuals): (Vec<_>, Vec<_>) = residuals.unzip();
         let stretched: Vec<f64> = residuals
             .iter()
             .map(|residual| {
@@ -125,26 +126,21 @@ impl FittedMachine {
         let place = |point: &TestedPoint, heat_kw: f64| {
             [point.source_c, point.flow_c, heat_kw / fit.nominal_kw]
         };
-        let field = |kept: &dyn Fn(&TestedPoint) -> bool,
-                     of: &dyn Fn(&TestedPoint, &AtPoint) -> ([f64; 3], f64)| {
-            let (places, residuals): (Vec<_>, Vec<_>) = at
-                .iter()
-                .filter(|(point, _)| kept(point))
-                .map(|(point, model)| of(point, model))
-                .unzip();
-            Field::through(places, &residuals)
+        let output_field = |speed: SpeedAt, of_model: fn(&AtPoint) -> f64| {
+            Field::through(
+                at.iter()
+                    .filter(|(point, _)| point.at == speed)
+                    .map(|(p, m)| (place(p, 0.0), p.heat_kw / of_model(m) - 1.0)),
+            )
         };
         Ok(Self {
             machine: fit.machine.clone(),
-            cop: field(&|_| true, &|p, m| {
-                (place(p, m.operation.heat_kw), p.cop / m.cop - 1.0)
-            }),
-            greatest: field(&|p| p.at == SpeedAt::Maximum, &|p, m| {
-                (place(p, 0.0), p.heat_kw / m.greatest_kw - 1.0)
-            }),
-            least: field(&|p| p.at == SpeedAt::Least, &|p, m| {
-                (place(p, 0.0), p.heat_kw / m.least_kw - 1.0)
-            }),
+            cop: Field::through(
+                at.iter()
+                    .map(|(p, m)| (place(p, m.operation.heat_kw), p.cop / m.cop - 1.0)),
+            ),
+            greatest: output_field(SpeedAt::Maximum, |m| m.greatest_kw),
+            least: output_field(SpeedAt::Least, |m| m.least_kw),
             nominal_kw: fit.nominal_kw,
             strength: 1.0,
         })
@@ -219,9 +215,9 @@ mod tests {
 
     #[test]
     fn a_field_goes_through_its_residuals_and_fades_away_from_them() {
-        let places = vec![[7.0, 35.0, 1.0], [-7.0, 35.0, 0.9], [7.0, 55.0, 0.95]];
+        let places = [[7.0, 35.0, 1.0], [-7.0, 35.0, 0.9], [7.0, 55.0, 0.95]];
         let residuals = [0.05, -0.03, 0.01];
-        let field = Field::through(places.clone(), &residuals);
+        let field = Field::through(places.iter().copied().zip(residuals));
         for (place, residual) in places.iter().zip(residuals) {
             assert!(
                 (field.at(*place) - residual).abs() < 1e-3,
@@ -248,9 +244,8 @@ mod tests {
             at in (-30.0..40.0_f64, 20.0..80.0_f64, 0.0..2.0_f64),
         ) {
             let places = (0..residuals.len())
-                .map(|i| [i as f64 * 5.0 - 15.0, 35.0 + i as f64 * 3.0, 1.0])
-                .collect();
-            let field = Field::through(places, &residuals);
+                .map(|i| [i as f64 * 5.0 - 15.0, 35.0 + i as f64 * 3.0, 1.0]);
+            let field = Field::through(places.zip(residuals.iter().copied()));
             prop_assert!(field.at([at.0, at.1, at.2]).abs() <= GREATEST_CORRECTION);
         }
     }

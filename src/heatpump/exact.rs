@@ -19,6 +19,9 @@ pub struct Exact {
     pub running_fraction: f64,
     /// Frost losses.
     pub frost: FrostLoss,
+    /// Evaporating temperature that frost was reckoned with, °C: entering source less the approach at the corrected heat taken from the
+    /// source, a few hundredths of a kelvin from that of the physical cycle.
+    pub frost_evaporating_c: f64,
     /// Humidity ratio of the outdoor air that frost was reckoned with, kg/kg; 0 where there is no outdoor coil.
     pub humidity_ratio: f64,
     /// Evaporator: entering source minus evaporating temperature, K.
@@ -51,6 +54,7 @@ impl HeatPump {
             return_c: f64::NAN,
             running_fraction: 0.0,
             frost: FrostLoss::default(),
+            frost_evaporating_c: f64::NAN,
             humidity_ratio: self.moisture(cold),
             evaporator_approach_k: f64::NAN,
             condenser_approach_k: f64::NAN,
@@ -66,10 +70,13 @@ impl HeatPump {
         let net_kw = delivered.heat_kwh / delivered.running_hours / self.scale;
         let source_c = delivered.source_c;
         let machine_c = source_c.min(delivered.flow_c - super::limits::LEAST_DIFFERENCE_K);
+        let coil_c = |operation: &Operation| {
+            machine_c - machine.evaporator.approach_k(operation.extracted_kw)
+        };
         let frost_at = |operation: &Operation| {
             if exact.humidity_ratio > 0.0 {
                 let frost = &self.core.frost;
-                frost.loss(source_c, operation.evaporating_c, exact.humidity_ratio)
+                frost.loss(source_c, coil_c(operation), exact.humidity_ratio)
             } else {
                 FrostLoss::default()
             }
@@ -87,6 +94,7 @@ impl HeatPump {
             loss = frost_at(&operation);
         }
         exact.frost = loss;
+        exact.frost_evaporating_c = coil_c(&operation);
         exact.correction = fitted.cop_factor(machine_c, delivered.flow_c, operation.heat_kw);
         exact.evaporator_approach_k = machine_c - operation.evaporating_c;
         exact.condenser_approach_k = operation.condensing_c - delivered.flow_c;

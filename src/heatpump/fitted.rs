@@ -18,6 +18,9 @@ use crate::refrigerant::CycleTable;
 const STRENGTHS: [f64; 7] = [1.0, 0.85, 0.7, 0.5, 0.3, 0.15, 0.0];
 /// Distance that condensing keeps from the end of the refrigerant's table at the machine's largest output, K.
 const CONDENSING_MARGIN_K: f64 = 0.5;
+/// Places at which a new map is compared with its exact machine, and the error from which it is told, percent.
+const MAP_PLACES: usize = 200;
+const MAP_PERCENT: f64 = 0.15;
 /// Error of a fitted point that is worth a finding, percent of COP or output.
 const POINT_MISSED_PERCENT: f64 = 1.0;
 
@@ -123,6 +126,20 @@ pub fn fit(sheet: &Sheet) -> Result<Fitted, Problems> {
                 Severity::Note,
                 "honouring every point would make COP rise with flow or fall with source temperature",
                 format!("{:.0} % of the correction was kept", machine.strength() * 100.0),
+            )
+            .at(&Place::file(sheet.file.clone())),
+        );
+    }
+    let map_error = map.error(&machine, &limits, MAP_PLACES).map_err(unsolved)?;
+    let map_percent = 100.0 * map_error.cop.max(map_error.output);
+    if map_percent > MAP_PERCENT {
+        findings.push(
+            Finding::new(
+                Severity::Warning,
+                format!(
+                    "the machine bends so sharply that its map is up to {map_percent:.1} % off"
+                ),
+                "check the points: a real machine does not bend so",
             )
             .at(&Place::file(sheet.file.clone())),
         );

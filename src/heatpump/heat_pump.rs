@@ -3,12 +3,14 @@
 use std::sync::Arc;
 
 use super::correction::FittedMachine;
+use super::duty::{ColdSide, Duty};
 use super::frost::Frost;
 use super::idle::IdlePower;
 use super::limits::Limits;
 use super::map::Map;
 use super::sheet::{Sheet, SourceKind};
 use crate::bounds::FIELD_FACTOR;
+use crate::problem::{Finding, Severity};
 use crate::refrigerant::Refrigerant;
 
 /// Allowance from laboratory to home: the field-correction factor of Ruhnau et al. 2019, doi 10.1038/s41597-019-0199-y
@@ -145,6 +147,27 @@ impl HeatPump {
         self.core.rated_condition
     }
 
+    /// Heat drawn from the source at its rated output and condition, kW.
+    pub fn rated_draw_kw(&self) -> f64 {
+        /// Flow minus return of the standard rating, EN 14511, K.
+        const SPREAD_K: f64 = 5.0;
+        let (open_c, flow_c) = self.core.rated_condition;
+        let cold = ColdSide {
+            open_c,
+            k_per_kw: 0.0,
+            relative_humidity: None,
+        };
+        let heat_kw = self.rated_output_kw();
+        let duty = Duty {
+            heat_kw,
+            flow_c,
+            spread_k: SPREAD_K,
+            hours: 1.0,
+            at_full_output: true,
+        };
+        self.deliver(&cold, &duty).extracted_kwh
+    }
+
     /// Size relative to the sheet.
     pub fn scale(&self) -> f64 {
         self.scale
@@ -173,6 +196,28 @@ impl HeatPump {
     /// Greatest operating current, A, where the sheet states it; scaled with the machine.
     pub fn greatest_current_a(&self) -> Option<f64> {
         self.core.greatest_current_a.map(|a| a * self.scale)
+    }
+
+    /// What people should know before they have such a machine put in.
+    pub fn cautions(&self) -> Vec<Finding> {
+        let refrigerant = self.refrigerant();
+        let facts = refrigerant.facts();
+        let supply = match self.greatest_current_a() {
+            Some(current_a) => format!("it draws up to {current_a:.0} A"),
+            None => "its greatest current is not on the sheet".to_owned(),
+        };
+        vec![
+            Finding::new(
+                Severity::Caution,
+                format!("{refrigerant} is {}", facts.substance),
+                facts.caution,
+            ),
+            Finding::new(
+                Severity::Caution,
+                supply,
+                "the supply, with backup and immersion heaters added, is for an electrician and the network operator to check",
+            ),
+        ]
     }
 
     /// The map at the sheet's own size.

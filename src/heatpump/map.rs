@@ -3,7 +3,8 @@
 //! Greatest output, least output, and electricity per heat at fractions of the way between them, over source and flow
 //! temperature. Exact solutions on coarse Chebyshev nodes in flow and fraction are refined to a fine table; a look-up is
 //! multilinear, so it rises and falls as its nodes do. Source nodes are whole degrees, where the greatest speed has its
-//! knots. Nothing with a kink is in the map: limits, frost, cycling and backup stand outside it.
+//! knots. A look-up of range and input takes about 375 instructions (callgrind on x86-64: 133 and 241; benches/machine.rs).
+//! Nothing with a kink is in the map: limits, frost, cycling and backup stand outside it.
 
 mod build;
 mod error;

@@ -22,22 +22,72 @@ impl EmitterKind {
     }
 }
 
+/// Part of a home's emitters: one kind at its own design temperatures.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Group {
+    /// Kind of emitter.
+    pub kind: EmitterKind,
+    /// Share of the design heat load, 0 to 1.
+    pub share: f64,
+    /// Flow at the design heat load, °C.
+    pub flow_c: f64,
+    /// Return at the design heat load, °C.
+    pub return_c: f64,
+}
+
+/// Most groups of a home.
+pub const MOST_GROUPS: usize = 4;
+
+/// How the flow temperature is set.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Control {
+    /// Just as hot as the load of the hour needs.
+    FollowingLoad,
+    /// A straight line over outdoor temperature through two points (outdoor °C, flow °C), level beyond them.
+    Line {
+        /// The colder point.
+        cold: (f64, f64),
+        /// The milder point.
+        mild: (f64, f64),
+    },
+    /// The same at every load, °C.
+    Fixed(f64),
+}
+
+impl Control {
+    /// The flow it sets at an outdoor temperature, °C; nothing when it follows the load.
+    pub fn flow_c(&self, outdoor_c: f64) -> Option<f64> {
+        match *self {
+            Self::FollowingLoad => None,
+            Self::Fixed(flow_c) => Some(flow_c),
+            Self::Line { cold, mild } => {
+                let share = ((outdoor_c - cold.0) / (mild.0 - cold.0)).clamp(0.0, 1.0);
+                Some(cold.1 + share * (mild.1 - cold.1))
+            }
+        }
+    }
+}
+
 /// Emitters sized once, at their own design point; they do not grow when the heat loss is varied.
+///
+/// Several groups stand side by side, each with its own mixing valve: the one that needs the hottest water sets the flow.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Emitters {
-    kind: EmitterKind,
+    /// The leading group first; shares add up to 1.
+    groups: [Group; MOST_GROUPS],
+    count: usize,
     design_load_kw: f64,
-    design_flow_c: f64,
-    design_spread_k: f64,
-    design_excess_k: f64,
+    room_c: f64,
     greatest_flow_c: f64,
     greatest_output_kw: f64,
+    control: Control,
+    header_k: f64,
 }
 
 /// Water temperatures at a load.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct WaterTemperatures {
-    /// Leaving the machine, °C.
+    /// To the emitters, °C.
     pub flow_c: f64,
     /// Coming back, °C.
     pub return_c: f64,
@@ -50,13 +100,65 @@ impl WaterTemperatures {
     }
 }
 
+/// What the control lets the emitters have.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Supply {
+    /// Heat they can carry at the flow that is set, at most what was asked, kW.
+    pub heat_kw: f64,
+    /// Water temperatures at the emitters.
+    pub water: WaterTemperatures,
+    /// Flow minus return of the emitters at their designed water flow, K: with valves throttling, less than that of `water`.
+    pub spread_k: f64,
+}
+
 /// Iterations of the inverse emitter curve; convergence is quadratic.
 const MAX_ITERATIONS: usize = 50;
 /// Flow temperature is solved to this many kelvins.
 const TOLERANCE_K: f64 = 1e-9;
 
+impl Group {
+    fn spread_k(&self) -> f64 {
+        self.flow_c - self.return_c
+    }
+
+    fn excess_k(&self, room_c: f64) -> f64 {
+        (self.flow_c + self.return_c) / 2.0 - room_c
+    }
+
+    /// Water temperatures at a share of its design output, into rooms at `now_c`, designed for rooms at `room_c`.
+    fn at_share(&self, share: f64, room_c: f64, now_c: f64) -> WaterTemperatures {
+        let mean_c = now_c + self.excess_k(room_c) * share.powf(1.0 / self.kind.exponent());
+        let half_spread_k = self.spread_k() * share / 2.0;
+        WaterTemperatures {
+            flow_c: mean_c + half_spread_k,
+            return_c: mean_c - half_spread_k,
+        }
+    }
+
+    /// Share of its design output at a flow this much above the room, K: the inverse of [`Group::at_share`].
+    fn share_at(&self, above_room_k: f64, room_c: f64) -> f64 {
+        if above_room_k <= 0.0 {
+            return 0.0;
+        }
+        // Solve excess = D s^(1/n) + (S/2) s for the share s; with y = s^(1/n) both terms grow with y.
+        let n = self.kind.exponent();
+        let design_excess_k = self.excess_k(room_c);
+        let half_spread_k = self.spread_k() / 2.0;
+        let mut y = above_room_k / design_excess_k;
+        for _ in 0..MAX_ITERATIONS {
+            let error_k = design_excess_k * y + half_spread_k * y.powf(n) - above_room_k;
+            if error_k.abs() < TOLERANCE_K {
+                break;
+            }
+            // Newton from above on a convex function stays above the root and cannot leave the domain.
+            y -= error_k / (design_excess_k + half_spread_k * n * y.powf(n - 1.0));
+        }
+        y.powf(n)
+    }
+}
+
 impl Emitters {
-    /// Emitters that give `design_load_kw` (> 0) into a room at `room_c` with water at `flow_c`/`return_c`
+    /// Emitters of one kind that give `design_load_kw` (> 0) into a room at `room_c` with water at `flow_c`/`return_c`
     /// (flow > return > room), and whose flow never exceeds `greatest_flow_c`.
     pub fn new(
         kind: EmitterKind,
@@ -66,22 +168,99 @@ impl Emitters {
         room_c: f64,
         greatest_flow_c: f64,
     ) -> Self {
-        let mut emitters = Self {
+        let only = Group {
             kind,
+            share: 1.0,
+            flow_c,
+            return_c,
+        };
+        Self::assemble(
+            [only; MOST_GROUPS],
+            1,
             design_load_kw,
-            design_flow_c: flow_c,
-            design_spread_k: flow_c - return_c,
-            design_excess_k: (flow_c + return_c) / 2.0 - room_c,
-            greatest_flow_c: greatest_flow_c.max(flow_c),
+            room_c,
+            greatest_flow_c,
+        )
+    }
+
+    /// Emitters of one to [`MOST_GROUPS`] groups, whose shares are scaled to add up to 1; nothing for another number.
+    pub fn of_groups(
+        groups: &[Group],
+        design_load_kw: f64,
+        room_c: f64,
+        greatest_flow_c: f64,
+    ) -> Option<Self> {
+        let first = *groups.first()?;
+        if groups.len() > MOST_GROUPS {
+            return None;
+        }
+        let sum: f64 = groups.iter().map(|group| group.share).sum();
+        let mut held = [first; MOST_GROUPS];
+        for (place, group) in held.iter_mut().zip(groups) {
+            *place = Group {
+                share: group.share / sum,
+                ..*group
+            };
+        }
+        held[..groups.len()].sort_by(|a, b| b.flow_c.total_cmp(&a.flow_c));
+        Some(Self::assemble(
+            held,
+            groups.len(),
+            design_load_kw,
+            room_c,
+            greatest_flow_c,
+        ))
+    }
+
+    fn assemble(
+        groups: [Group; MOST_GROUPS],
+        count: usize,
+        design_load_kw: f64,
+        room_c: f64,
+        greatest_flow_c: f64,
+    ) -> Self {
+        let mut emitters = Self {
+            groups,
+            count,
+            design_load_kw,
+            room_c,
+            greatest_flow_c: greatest_flow_c.max(groups[0].flow_c),
             greatest_output_kw: design_load_kw,
+            control: Control::FollowingLoad,
+            header_k: 0.0,
         };
         emitters.greatest_output_kw = emitters.output_kw(emitters.greatest_flow_c, room_c);
         emitters
     }
 
-    /// Kind of emitter.
+    /// The same emitters under another control.
+    pub fn with_control(self, control: Control) -> Self {
+        Self { control, ..self }
+    }
+
+    /// The same emitters behind a buffer or low-loss header that mixes the flow down by a number of kelvins (≥ 0).
+    pub fn with_header(self, header_k: f64) -> Self {
+        Self { header_k, ..self }
+    }
+
+    /// The groups, the one with the hottest design flow first.
+    pub fn groups(&self) -> &[Group] {
+        &self.groups[..self.count]
+    }
+
+    /// How the flow temperature is set.
+    pub fn control(&self) -> Control {
+        self.control
+    }
+
+    /// By how much the machine's flow is above that of the emitters, K.
+    pub fn header_k(&self) -> f64 {
+        self.header_k
+    }
+
+    /// Kind of the leading group.
     pub fn kind(&self) -> EmitterKind {
-        self.kind
+        self.groups[0].kind
     }
 
     /// Heat they give at their design point, kW.
@@ -91,26 +270,37 @@ impl Emitters {
 
     /// Flow temperature at the design load, °C.
     pub fn design_flow_c(&self) -> f64 {
-        self.design_flow_c
+        self.groups[0].flow_c
     }
 
     /// Other emitters of the same kind for the same load, with another design flow temperature (°C) and the same spread as
-    /// far as the room (°C) allows; the greatest flow keeps its distance.
+    /// far as the room (°C) allows; other groups and the greatest flow keep their distance.
     pub fn with_design_flow(&self, flow_c: f64, room_c: f64) -> Self {
         /// Return water stays at least this much above the room, K.
         const LEAST_EXCESS_K: f64 = 1.0;
-        let return_c = (flow_c - self.design_spread_k)
-            .max(room_c + LEAST_EXCESS_K)
-            .min(flow_c);
-        let greatest_flow_c = flow_c + (self.greatest_flow_c - self.design_flow_c);
-        Self::new(
-            self.kind,
+        let rise_k = flow_c - self.design_flow_c();
+        let mut groups = self.groups;
+        for group in &mut groups {
+            let flow_c = (group.flow_c + rise_k).max(room_c + 2.0 * LEAST_EXCESS_K);
+            let return_c = (flow_c - group.spread_k())
+                .max(room_c + LEAST_EXCESS_K)
+                .min(flow_c);
+            *group = Group {
+                flow_c,
+                return_c,
+                ..*group
+            };
+        }
+        let greatest_flow_c = self.greatest_flow_c + rise_k;
+        Self::assemble(
+            groups,
+            self.count,
             self.design_load_kw,
-            flow_c,
-            return_c,
             room_c,
             greatest_flow_c,
         )
+        .with_control(self.control)
+        .with_header(self.header_k)
     }
 
     /// Flow temperature that is never exceeded, °C.
@@ -118,39 +308,76 @@ impl Emitters {
         self.greatest_flow_c
     }
 
-    /// Water temperatures that carry a heat (kW, ≥ 0) into a room.
+    /// Water temperatures at the emitters that carry a heat (kW, ≥ 0) into rooms at a temperature (°C).
     ///
     /// EN 442: output ∝ excess temperature ^ n with the arithmetic mean water temperature; the water flow stays as
-    /// designed, so flow minus return is proportional to the heat.
+    /// designed, so flow minus return is proportional to the heat. One power a group.
     pub fn at_load(&self, heat_kw: f64, room_c: f64) -> WaterTemperatures {
         let share = heat_kw / self.design_load_kw;
-        let mean_c = room_c + self.design_excess_k * share.powf(1.0 / self.kind.exponent());
-        let half_spread_k = self.design_spread_k * share / 2.0;
+        let leading = self.groups[0].at_share(share, self.room_c, room_c);
+        if self.count == 1 {
+            return leading;
+        }
+        let mut each = [leading; MOST_GROUPS];
+        let mut flow_c = leading.flow_c;
+        for (water, group) in each.iter_mut().zip(self.groups()).skip(1) {
+            *water = group.at_share(share, self.room_c, room_c);
+            flow_c = flow_c.max(water.flow_c);
+        }
+        // Each group draws from the common flow what carries its heat down to its own return.
+        let (mut water_flow, mut mixed) = (0.0, 0.0);
+        for (water, group) in each.iter().zip(self.groups()) {
+            let drawn = group.share / (flow_c - water.return_c).max(TOLERANCE_K);
+            water_flow += drawn;
+            mixed += drawn * water.return_c;
+        }
         WaterTemperatures {
-            flow_c: mean_c + half_spread_k,
-            return_c: mean_c - half_spread_k,
+            flow_c,
+            return_c: mixed / water_flow,
         }
     }
 
     /// Heat they give at a flow temperature, kW: the inverse of [`Emitters::at_load`].
     pub fn output_kw(&self, flow_c: f64, room_c: f64) -> f64 {
-        let excess_k = flow_c - room_c;
-        if excess_k <= 0.0 {
-            return 0.0;
-        }
-        // Solve excess = D s^(1/n) + (S/2) s for the share s; with y = s^(1/n) both terms grow with y.
-        let n = self.kind.exponent();
-        let half_spread_k = self.design_spread_k / 2.0;
-        let mut y = excess_k / self.design_excess_k;
-        for _ in 0..MAX_ITERATIONS {
-            let error_k = self.design_excess_k * y + half_spread_k * y.powf(n) - excess_k;
-            if error_k.abs() < TOLERANCE_K {
-                break;
+        let share = self
+            .groups()
+            .iter()
+            .map(|group| group.share_at(flow_c - room_c, self.room_c))
+            .fold(f64::INFINITY, f64::min);
+        self.design_load_kw * share
+    }
+
+    /// What the control lets them carry of a heat (kW) at an outdoor temperature, into rooms at a temperature (°C).
+    ///
+    /// A flow hotter than needed is throttled by the room valves: the same mean water, a cooler return. A cooler flow carries
+    /// less heat.
+    pub fn supply(&self, heat_kw: f64, room_c: f64, outdoor_c: f64) -> Supply {
+        let needed = self.at_load(heat_kw, room_c);
+        let spread_k = needed.flow_c - needed.return_c;
+        match self.control.flow_c(outdoor_c) {
+            None => Supply {
+                heat_kw,
+                water: needed,
+                spread_k,
+            },
+            Some(flow_c) if flow_c >= needed.flow_c => {
+                let return_c = (2.0 * needed.mean_c() - flow_c).max(room_c.min(needed.return_c));
+                Supply {
+                    heat_kw,
+                    water: WaterTemperatures { flow_c, return_c },
+                    spread_k,
+                }
             }
-            // Newton from above on a convex function stays above the root and cannot leave the domain.
-            y -= error_k / (self.design_excess_k + half_spread_k * n * y.powf(n - 1.0));
+            Some(flow_c) => {
+                let heat_kw = self.output_kw(flow_c, room_c);
+                let water = self.at_load(heat_kw, room_c);
+                Supply {
+                    heat_kw,
+                    water,
+                    spread_k: water.flow_c - water.return_c,
+                }
+            }
         }
-        self.design_load_kw * y.powf(n)
     }
 
     /// Greatest heat at the greatest permitted flow temperature into a room at its design temperature, kW.
@@ -158,14 +385,15 @@ impl Emitters {
         self.greatest_output_kw
     }
 
-    /// Mean water minus room temperature at the design load, K.
+    /// Mean water minus room temperature of the leading group at the design load, K.
     pub fn design_excess_k(&self) -> f64 {
-        self.design_excess_k
+        self.groups[0].excess_k(self.room_c)
     }
 
     /// Flow minus return at the design load, K.
     pub fn design_spread_k(&self) -> f64 {
-        self.design_spread_k
+        let water = self.at_load(self.design_load_kw, self.room_c);
+        water.flow_c - water.return_c
     }
 }
 
@@ -200,12 +428,81 @@ mod tests {
         assert!((radiators.at_load(5.0, 20.0).mean_c() - 46.5).abs() < 1e-12);
     }
 
+    /// Two groups of the same kind and temperatures are one; the mixed return lies between those of the groups and closes the
+    /// heat balance: flow shares × (flow − return) add up to the load.
+    #[test]
+    fn equal_groups_are_one_and_unequal_ones_close() {
+        let half = Group {
+            kind: EmitterKind::Radiators,
+            share: 3.0,
+            flow_c: 50.0,
+            return_c: 43.0,
+        };
+        let two = Emitters::of_groups(&[half, half], 5.0, 20.0, 60.0).unwrap();
+        let one = Emitters::new(EmitterKind::Radiators, 5.0, 50.0, 43.0, 20.0, 60.0);
+        let (a, b) = (two.at_load(3.0, 19.0), one.at_load(3.0, 19.0));
+        assert!((a.flow_c - b.flow_c).abs() < 1e-12 && (a.return_c - b.return_c).abs() < 1e-9);
+        let floor = Group {
+            kind: EmitterKind::Underfloor,
+            share: 3.0,
+            flow_c: 35.0,
+            return_c: 30.0,
+        };
+        let mixed = Emitters::of_groups(&[half, floor], 5.0, 20.0, 60.0)
+            .unwrap()
+            .at_load(5.0, 20.0);
+        // 1/(50−43) and 1/(50−30) parts of water bring back 1/2 + 1/2 of the heat.
+        let (radiator, floor) = (1.0 / 7.0, 1.0 / 20.0);
+        let expected = (radiator * 43.0 + floor * 30.0) / (radiator + floor);
+        assert!((mixed.return_c - expected).abs() < 1e-9 && (mixed.flow_c - 50.0).abs() < 1e-12);
+        assert_eq!(Emitters::of_groups(&[], 5.0, 20.0, 60.0), None);
+    }
+
+    /// A fixed flow carries the same heat at the same mean water with a cooler return; a flow that is too cool carries less.
+    #[test]
+    fn control_throttles_or_falls_short() {
+        let radiators = Emitters::new(EmitterKind::Radiators, 5.0, 50.0, 43.0, 20.0, 60.0);
+        let needed = radiators.at_load(2.0, 20.0);
+        let fixed = radiators
+            .with_control(Control::Fixed(45.0))
+            .supply(2.0, 20.0, 8.0);
+        assert_eq!((fixed.heat_kw, fixed.water.flow_c), (2.0, 45.0));
+        assert!((fixed.water.mean_c() - needed.mean_c()).abs() < 1e-9);
+        let line = Control::Line {
+            cold: (-3.0, 50.0),
+            mild: (15.0, 30.0),
+        };
+        assert_eq!(line.flow_c(6.0), Some(40.0));
+        assert_eq!(
+            (line.flow_c(-20.0), line.flow_c(30.0)),
+            (Some(50.0), Some(30.0))
+        );
+        let short = radiators.with_control(line).supply(5.0, 20.0, 6.0);
+        assert!(short.heat_kw < 5.0 && (short.water.flow_c - 40.0).abs() < 1e-6);
+        let follows = radiators.supply(2.0, 20.0, 8.0);
+        assert_eq!(follows.water, needed);
+    }
+
     proptest! {
         #[test]
         fn output_inverts_load(load in 0.01..20.0, flow in 30.0..70.0, spread in 0.0..10.0f64, room in 15.0..22.0) {
             let emitters = Emitters::new(EmitterKind::Radiators, 6.0, flow, flow - spread.min(flow - room - 2.0), room, 85.0);
             let water = emitters.at_load(load, room);
             prop_assert!((emitters.output_kw(water.flow_c, room) / load - 1.0).abs() < 1e-6);
+        }
+
+        /// Groups: the whole carries what its parts carry, at a flow no cooler than any of them needs.
+        #[test]
+        fn groups_invert_too(load in 0.05..9.0, room in 15.0..22.0) {
+            let groups = [
+                Group { kind: EmitterKind::Underfloor, share: 0.4, flow_c: 38.0, return_c: 33.0 },
+                Group { kind: EmitterKind::Radiators, share: 0.6, flow_c: 48.0, return_c: 41.0 },
+            ];
+            let emitters = Emitters::of_groups(&groups, 6.0, 20.0, 60.0).unwrap();
+            let water = emitters.at_load(load, room);
+            prop_assert!((emitters.output_kw(water.flow_c, room) / load - 1.0).abs() < 1e-6);
+            prop_assert!(water.return_c < water.flow_c && water.return_c > room);
+            prop_assert_eq!(emitters.kind(), EmitterKind::Radiators);
         }
 
         #[test]

@@ -29,6 +29,16 @@ impl Construction {
     }
 }
 
+/// Heat that warms a cubic metre of indoor air by a kelvin, Wh/m³K: 0.34 in EN 12831-1 and ISO 13789 \[from memory\].
+///
+/// 1.2 kg/m³ × 1005 J/kgK / 3600 s/h = 0.335.
+pub const AIR_WH_PER_M3_K: f64 = 0.34;
+
+/// Ventilation heat-loss coefficient of an air change rate (1/h) and a volume (m³), W/K; heat recovery is taken off the rate.
+pub fn ventilation_w_per_k(air_changes_per_h: f64, volume_m3: f64) -> f64 {
+    AIR_WH_PER_M3_K * air_changes_per_h * volume_m3
+}
+
 /// Heat loss, storage and gains of a home, as one capacity behind one coefficient.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Fabric {
@@ -150,17 +160,35 @@ impl Fabric {
         self.heat_kw(self.left_after_hour, room_c, target_c, outdoor_c, gains_kw)
     }
 
-    /// The constant heat that brings the room from `room_c` to `target_c` in [`RECOVERY_H`], kW: what a controller asks for.
+    /// The constant heat that brings the room from `room_c` to `target_c` in a number of hours (≥ 1) of the same weather, kW.
+    pub fn heat_to_reach_in_kw(
+        &self,
+        hours: u8,
+        room_c: f64,
+        target_c: f64,
+        outdoor_c: f64,
+        gains_kw: f64,
+    ) -> f64 {
+        let left = self.left_after_hour.powi(i32::from(hours));
+        self.heat_kw(left, room_c, target_c, outdoor_c, gains_kw)
+    }
+
+    /// What a controller asks for, kW: the constant heat that brings a cooler room from `room_c` to `target_c` in
+    /// [`RECOVERY_H`], and lets a warmer one fall at once.
     ///
     /// At the set point it is the steady loss less gains, whatever the time.
     pub fn heat_wanted_kw(&self, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
-        self.heat_kw(
-            self.left_after_recovery,
-            room_c,
-            target_c,
-            outdoor_c,
-            gains_kw,
-        )
+        let left = self.left_at_target(room_c, target_c);
+        self.heat_kw(left, room_c, target_c, outdoor_c, gains_kw)
+    }
+
+    /// Share of its distance from where it heads that a room has left when it is at the target.
+    fn left_at_target(&self, room_c: f64, target_c: f64) -> f64 {
+        if room_c > target_c {
+            self.left_after_hour
+        } else {
+            self.left_after_recovery
+        }
     }
 
     fn heat_kw(&self, left: f64, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
@@ -173,9 +201,26 @@ impl Fabric {
         (target_c - room_c * left) / (1.0 - left)
     }
 
-    /// Temperature that the heat wanted heads for, °C.
-    pub fn recovery_heads_for_c(&self, room_c: f64, target_c: f64) -> f64 {
-        self.heads_for_c(self.left_after_recovery, room_c, target_c)
+    /// Temperature that the heat wanted heads for, °C, and in how many hours it passes the target.
+    pub fn recovery_heads_for_c(&self, room_c: f64, target_c: f64) -> (f64, f64) {
+        let left = self.left_at_target(room_c, target_c);
+        let hours = if room_c > target_c { 1.0 } else { RECOVERY_H };
+        (self.heads_for_c(left, room_c, target_c), hours)
+    }
+
+    /// Whether it stores any heat: without storage nothing is gained by heating ahead.
+    pub fn stores_heat(&self) -> bool {
+        self.capacity_kwh_per_k > 0.0
+    }
+
+    /// Heat capacity, kWh/K.
+    pub fn capacity_kwh_per_k(&self) -> f64 {
+        self.capacity_kwh_per_k
+    }
+
+    /// Effective solar aperture, m².
+    pub fn solar_aperture_m2(&self) -> f64 {
+        self.solar_aperture_m2
     }
 
     /// Steps the room through one hour with a constant heat (kWh in the hour).
@@ -248,6 +293,14 @@ mod tests {
         assert!((fabric.step(15.0, heat, -5.0, 0.3, 20.0).end_c - 20.0).abs() < 1e-12);
     }
 
+    /// EN 12831-1: 0.34 Wh/m³K \[from memory\]; 240 m³ at 0.5 air changes an hour lose 40.8 W/K.
+    #[test]
+    fn ventilation_follows_volume_and_air_changes() {
+        assert!((ventilation_w_per_k(0.5, 240.0) - 40.8).abs() < 1e-9);
+        // Density times heat capacity of dry air at 20 °C and 101.325 kPa: 1.2041 kg/m³ and 1006 J/kgK.
+        assert!((AIR_WH_PER_M3_K - 1.2041 * 1006.0 / 3600.0).abs() < 0.005);
+    }
+
     /// At the set point the heat wanted is the steady loss, so that a year of it is the steady-state sum.
     #[test]
     fn at_the_set_point_the_heat_wanted_is_the_steady_loss() {
@@ -255,9 +308,25 @@ mod tests {
         assert!((wanted - (0.212 * 17.0 - 0.4)).abs() < 1e-12);
         let cool = terrace().heat_wanted_kw(19.5, 20.0, 3.0, 0.4);
         assert!(cool > wanted && cool < terrace().heat_to_reach_kwh(19.5, 20.0, 3.0, 0.4));
+        // A room that is let cool asks for nothing, and does not slow its fall.
+        assert_eq!(terrace().heat_wanted_kw(20.0, 16.0, 3.0, 0.0), 0.0);
     }
 
     proptest! {
+        /// The heat for several hours, given hour by hour, ends at the target.
+        #[test]
+        fn a_warm_up_spread_over_hours_arrives(
+            loss in 50.0..600.0, tau in 5.0..300.0, room in 10.0..18.0, outdoor in -20.0..8.0, hours in 1..12u8,
+        ) {
+            let fabric = Fabric::new(loss, tau * loss / 1000.0, 0.0, 0.0);
+            let heat = fabric.heat_to_reach_in_kw(hours, room, 20.0, outdoor, 0.0);
+            let mut now = room;
+            for _ in 0..hours {
+                now = fabric.step(now, heat, outdoor, 0.0, 25.0).end_c;
+            }
+            prop_assert!((now - 20.0).abs() < 1e-6, "{now}");
+        }
+
         #[test]
         fn the_heat_that_reaches_a_target_reaches_it(
             loss in 50.0..600.0, tau in 0.0..300.0, room in 10.0..25.0, target in 12.0..24.0f64,

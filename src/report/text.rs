@@ -2,6 +2,7 @@
 
 use std::fmt::Write as _;
 
+use super::home::home_in_words;
 use super::table::plain_table_within;
 use crate::answer::{Estimate, LeverAnswer, SystemAnswer};
 
@@ -33,6 +34,9 @@ pub fn estimate_text(estimate: &Estimate, sources: bool) -> String {
         if let Some(shifting) = &choice.shifting {
             let _ = writeln!(text, "{}", wrapped(&shifting.sentence, "  ", "  "));
         }
+    }
+    for line in home_in_words(estimate) {
+        let _ = writeln!(text, "{}", wrapped(&line, "", "  "));
     }
     let _ = writeln!(text, "\n{}", assumptions(estimate, sources));
     let _ = write!(text, "\n{}", wrapped(LIMITS, "", ""));
@@ -90,6 +94,9 @@ const LINES: &[Line] = &[
     ("Heat to rooms, kWh", |s| {
         Some(format!("{:.0}", s.space_heat_kwh))
     }),
+    ("  by another pattern", |s| {
+        s.pattern_heat_kwh.map(|kwh| format!("{kwh:+.0}"))
+    }),
     ("Heat to hot water, kWh", |s| {
         Some(format!("{:.0}", s.hot_water_kwh))
     }),
@@ -128,11 +135,40 @@ const LINES: &[Line] = &[
         s.balance_point_with_hot_water_c
             .map(|c| format!("{c:.1} °C"))
     }),
+    ("Year of the loop shown", |s| {
+        s.ground.as_ref().map(|g| g.shown_year.to_string())
+    }),
+    ("  cost in its year 1", |s| {
+        s.ground
+            .as_ref()
+            .map(|g| format!("{:.0}", g.first_year_cost))
+    }),
+    ("  SPF H4 in year 1", |s| {
+        let spf = s.ground.as_ref()?.first_year_spf_h4?;
+        Some(format!("{spf:.2}"))
+    }),
+    ("  lowest brine", |s| {
+        let c = s.ground.as_ref()?.lowest_brine_c?;
+        Some(format!("{c:.1} °C"))
+    }),
+    ("  lowest in year 1", |s| {
+        let c = s.ground.as_ref()?.first_year_lowest_brine_c?;
+        Some(format!("{c:.1} °C"))
+    }),
+    ("  machine stood, h", |s| {
+        s.ground.as_ref().map(|g| format!("{:.0}", g.hours_stopped))
+    }),
     ("Hours with backup", |s| {
         s.backup_kwh.map(|_| format!("{:.0}", s.hours_backup))
     }),
     ("Hours short of heat", |s| {
         Some(format!("{:.0}", s.hours_short))
+    }),
+    ("Hours of cool taps", |s| {
+        (s.hours_water_short >= 0.5).then(|| format!("{:.0}", s.hours_water_short))
+    }),
+    ("Design load carried", |s| {
+        Some(format!("{:.0} %", 100.0 + s.design.margin_percent))
     }),
     ("Coldest indoors", |s| {
         Some(format!("{:.1} °C", s.min_indoor_c))
@@ -213,7 +249,7 @@ fn assumptions(estimate: &Estimate, sources: bool) -> String {
     wrapped(&text, "", "  ")
 }
 
-fn wrapped(text: &str, first: &str, others: &str) -> String {
+pub(super) fn wrapped(text: &str, first: &str, others: &str) -> String {
     let options = textwrap::Options::new(usize::from(WIDTH))
         .initial_indent(first)
         .subsequent_indent(others);

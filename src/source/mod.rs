@@ -5,13 +5,14 @@
 //! ground remembers of that is its [`Memory`].
 //!
 //! `line`, `bores` and `trench` say how a wall falls when heat is taken; `response` makes a memory of that; `borehole`, `pipe`,
-//! `brine` and `circuit` lead from the wall to the machine; `buried` puts them together.
+//! `brine` and `circuit` lead from the wall to the machine; `design` puts them together, `buried` goes through the hours.
 
 mod borehole;
 mod bores;
 mod brine;
 mod buried;
 mod circuit;
+mod design;
 mod line;
 mod pipe;
 mod response;
@@ -23,8 +24,9 @@ mod water;
 pub use borehole::UTube;
 pub use bores::{Bore, total_depth_m};
 pub use brine::{Antifreeze, Brine, BrineProperties, GREATEST_SHARE};
-pub use buried::{BuriedLoop, Filling, Layout, LoopDesign, RECHARGE_DAYS};
+pub use buried::{BuriedLoop, RECHARGE_DAYS};
 pub use circuit::{BRINE_C, Circuit, Pump};
+pub use design::{Filling, Layout, LoopDesign};
 pub use line::EARLY_ERROR;
 pub use pipe::{LAMINAR_BELOW, Pipe, PipeFlow};
 pub use response::{Memory, NoResponse, Response};

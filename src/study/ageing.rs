@@ -1,7 +1,7 @@
 //! The years of a buried loop: what earlier ones leave behind, and each year of its life.
 
 use super::case::{Case, Contender};
-use crate::source::Memory;
+use crate::source::{BuriedLoop, Memory, Source};
 use crate::year::{MachineSystem, Row, Sink, State, run};
 
 /// Year of the loop's life that a comparison shows when the brief does not say: the fall of the ground is by then nearly done
@@ -29,6 +29,57 @@ impl Aged {
         } else {
             self.memory
         }
+    }
+}
+
+/// The ground at the beginning of a year of its life (from 1), if every year before had drawn what a year of such ground draws.
+///
+/// The history of equal years is a geometric sum, so that a life takes a few years' work. Nothing when the system has no ground that
+/// remembers.
+pub(super) fn settled(case: &Case, contender: &Contender, year: u32) -> Option<Memory> {
+    /// Times that draw and ground are brought into line; the draw hardly depends on the ground.
+    const PASSES: usize = 2;
+    let machine = contender.remembering()?;
+    let Source::Buried(buried) = &machine.source else {
+        return None;
+    };
+    let first = case.site.years.first()?.1.start;
+    let last = case.site.years.last()?.1.end;
+    let rounds = f64::from(year.saturating_sub(1)) / case.site.years.len() as f64;
+    let mut memory = Memory::default();
+    for _ in 0..PASSES {
+        let mut state = State {
+            ground: memory,
+            ..State::at_rest(&contender.system, contender.indoor_c)
+        };
+        let mut fresh = Remembering {
+            buried,
+            memory: Memory::default(),
+        };
+        run(
+            &case.site,
+            &contender.system,
+            &contender.plan,
+            first..last,
+            &mut state,
+            &mut fresh,
+        );
+        memory = buried
+            .response()
+            .repeated(&fresh.memory, (last - first) as f64, rounds);
+    }
+    Some(memory)
+}
+
+/// What fresh ground would remember of the draws of a run.
+struct Remembering<'a> {
+    buried: &'a BuriedLoop,
+    memory: Memory,
+}
+
+impl Sink for Remembering<'_> {
+    fn take(&mut self, hour: usize, row: &Row) {
+        self.buried.drawn(hour, row.extracted_kwh, &mut self.memory);
     }
 }
 

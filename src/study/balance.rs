@@ -44,6 +44,16 @@ struct Surplus<'a> {
     ground: Memory,
 }
 
+/// What a machine's source offers on a cold night of an outdoor temperature (°C), ground and water at their coldest.
+pub(super) fn cold_side(machine: &MachineSystem, outdoor_c: f64, ground: &Memory) -> ColdSide {
+    let offer = machine.source.cold_offer(outdoor_c, ground);
+    ColdSide {
+        open_c: offer.open_c,
+        k_per_kw: offer.k_per_kw,
+        relative_humidity: None,
+    }
+}
+
 impl Surplus<'_> {
     fn at(&self, outdoor_c: f64) -> f64 {
         let home = &self.system.home;
@@ -51,14 +61,9 @@ impl Surplus<'_> {
             .fabric
             .design_load_kw(self.indoor_c, outdoor_c)
             .max(0.0);
-        // A cold night meets ground and water at their coldest.
-        let offer = self.machine.source.cold_offer(outdoor_c, &self.ground);
-        let cold = ColdSide {
-            open_c: offer.open_c,
-            k_per_kw: offer.k_per_kw,
-            relative_humidity: None,
-        };
-        let flow_c = home.emitters.at_load(load_kw, self.indoor_c).flow_c;
+        let cold = cold_side(self.machine, outdoor_c, &self.ground);
+        let flow_c =
+            home.emitters.at_load(load_kw, self.indoor_c).flow_c + home.emitters.header_k();
         self.machine.machine.greatest_output_kw(&cold, flow_c) - load_kw - self.water_kw
     }
 }
@@ -88,7 +93,7 @@ pub fn balance_point(
         .home
         .hot_water
         .as_ref()
-        .map_or(0.0, |water| water.daily_kwh);
+        .map_or(0.0, |water| water.mean_daily_kwh());
     let water_kw = if with_hot_water {
         daily_kwh / 24.0
     } else {

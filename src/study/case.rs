@@ -8,7 +8,8 @@ use super::ageing::Aged;
 use super::outcome::{Outcome, YearOutcome, price};
 use crate::bill::Connection;
 use crate::carbon::Leakage;
-use crate::plan::ShiftRule;
+use crate::home::Pattern;
+use crate::plan::{Ability, ShiftRule};
 use crate::problem::Problems;
 use crate::source::Memory;
 use crate::tariff::{Meter, Reading, Tariff};
@@ -78,8 +79,16 @@ pub struct Contender {
     pub indoor_c: f64,
     /// Design outdoor temperature, °C.
     pub design_outdoor_c: f64,
+    /// Design heat load, kW; it stays when the heat loss is scaled to meter readings.
+    pub design_load_kw: f64,
+    /// When the rooms are heated.
+    pub pattern: Pattern,
+    /// What a warm-up can count on.
+    pub ability: Ability,
     /// What it costs to put in, in the case's currency.
     pub capital: Option<f64>,
+    /// The same part by part, where it is given so.
+    pub capital_parts: Vec<(String, f64)>,
     /// Year of a buried loop's life that is shown, from 1.
     pub shown_year: u32,
     /// The ground at the beginning of that year, see [`Case::age_grounds`]; nothing for fresh ground or none.
@@ -129,8 +138,41 @@ impl Case {
         &self,
         contender: &Contender,
         ground: Memory,
-        mut ledger: Option<&mut Ledger>,
+        ledger: Option<&mut Ledger>,
     ) -> Result<Outcome, Problems> {
+        Ok(self.run_through(contender, ground, ledger)?.0)
+    }
+
+    /// Cost of each year of a system's life from fresh ground, the weather's years in their order again and again: a buried loop costs
+    /// more to run year after year, everything else repeats itself.
+    ///
+    /// # Errors
+    /// When a bill cannot be made.
+    pub fn yearly_costs(&self, contender: &Contender, years: usize) -> Result<Vec<f64>, Problems> {
+        let mut costs = Vec::with_capacity(years + self.site.years.len());
+        let mut ground = Memory::default();
+        for _ in 0..years {
+            if costs.len() >= years {
+                break;
+            }
+            let (outcome, after) = self.run_through(contender, ground, None)?;
+            costs.extend(outcome.costs.by_year);
+            if contender.remembering().is_none() {
+                costs = costs.iter().copied().cycle().take(years).collect();
+            }
+            ground = after;
+        }
+        costs.truncate(years);
+        Ok(costs)
+    }
+
+    /// Runs one system through every year; gives what the ground remembers at the end beside the outcome.
+    fn run_through(
+        &self,
+        contender: &Contender,
+        ground: Memory,
+        mut ledger: Option<&mut Ledger>,
+    ) -> Result<(Outcome, Memory), Problems> {
         let site = &*self.site;
         let (system, plan) = (&contender.system, &contender.plan);
         let mut state = State {
@@ -154,12 +196,13 @@ impl Case {
             electricity, fuel, ..
         } = metered;
         let costs = price(contender, &site.years, &electricity, fuel.as_ref())?;
-        Ok(Outcome {
+        let outcome = Outcome {
             years,
             electricity,
             fuel,
             costs,
-        })
+        };
+        Ok((outcome, state.ground))
     }
 }
 

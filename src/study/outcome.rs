@@ -48,6 +48,8 @@ pub struct YearOutcome {
     pub hours_backup: u32,
     /// Hours that ended short of heat.
     pub hours_short: u32,
+    /// Hours in which hot water came out too cool.
+    pub hours_water_short: u32,
     /// Hours in which the machine stood because its source was outside its limits.
     pub hours_stopped: u32,
     /// Lowest temperature of air, brine or water entering the machine, °C; infinite when it never ran.
@@ -65,6 +67,7 @@ impl YearOutcome {
             peak_electric_kw: totals.peak_electric_kw,
             hours_backup: totals.hours_backup,
             hours_short: totals.hours_short,
+            hours_water_short: totals.hours_water_short,
             hours_stopped: totals.hours_stopped,
             min_source_c: totals.min_source_c,
         }

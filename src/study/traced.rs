@@ -69,7 +69,10 @@ pub fn trace(case: &Case, contender: &Contender, wanted: Wanted) -> Result<Trace
         Wanted::Hour(hour) => hour,
         _ => chosen(case, contender, wanted)?,
     };
-    let mut state = State::at_rest(system, contender.indoor_c);
+    let mut state = State {
+        ground: contender.aged.map(|aged| aged.memory).unwrap_or_default(),
+        ..State::at_rest(system, contender.indoor_c)
+    };
     run(site, system, plan, 0..hour, &mut state, &mut None::<Ledger>);
     let before = state.clone();
     let mut watch = Watch::default();

@@ -75,6 +75,10 @@ measures! {
     /// A volume of water.
     WaterVolume, "a volume of water", l, from_l, "120 L",
         ["L" = 1.0; "l" = 1.0; "litres" = 1.0; "m³" = 1000.0; "US gal" = 3.785_411_784; "UK gal" = 4.546_09;];
+    /// A volume of air.
+    AirVolume, "a volume of air", m3, from_m3, "240 m³", ["m³" = 1.0; "ft³" = M_PER_FT * M_PER_FT * M_PER_FT;];
+    /// Air exchanged in an hour, as a multiple of the volume.
+    AirChangeRate, "an air change rate", per_h, from_per_h, "0.5 1/h", ["1/h" = 1.0; "/h" = 1.0; "ach" = 1.0;];
     /// A span of time.
     Duration, "a span of time", h, from_h, "40 h",
         ["h" = 1.0; "min" = 1.0 / 60.0; "days" = 24.0; "d" = 24.0;];

@@ -77,13 +77,18 @@ pub fn split_number(text: &str) -> Option<(f64, &str)> {
             }
             ' ' | '\u{a0}' | '\u{202f}' | '\''
                 if digits.ends_with(|c: char| c.is_ascii_digit())
-                    && next.is_some_and(|c| c.is_ascii_digit()) => {}
+                    && is_group(&text[at + character.len_utf8()..]) => {}
             _ => break,
         }
         end = at + character.len_utf8();
     }
     let number: f64 = digits.parse().ok()?;
     number.is_finite().then(|| (number, text[end..].trim()))
+}
+
+/// Whether a text begins with a group of exactly three digits: "0.5 1/h" is half of a unit, not 0.51.
+fn is_group(text: &str) -> bool {
+    text.chars().take_while(char::is_ascii_digit).count() == 3
 }
 
 /// Reads a quantity of a kind.
@@ -171,6 +176,8 @@ mod tests {
             ("3 EUR", 3.0, "EUR"),
             ("5e-7 m²/s", 5e-7, "m²/s"),
             ("85%", 85.0, "%"),
+            ("0.5 1/h", 0.5, "1/h"),
+            ("1 234 567 kWh", 1_234_567.0, "kWh"),
         ] {
             assert_eq!(split_number(text), Some((number, unit)), "{text}");
         }

@@ -49,6 +49,16 @@ pub(super) fn text<'a>(
             "",
         );
     }
+    let top = bytes[..bytes.len().min(200)]
+        .trim_ascii_start()
+        .to_ascii_lowercase();
+    if top.starts_with(b"<!doctype html") || top.starts_with(b"<html") {
+        return problem(
+            "the file is a web page".to_owned(),
+            "a heading line and one reading a line",
+            "fetch the file itself, not the page about it",
+        );
+    }
     if let Some(label) = &options.encoding {
         let Some(encoding) = Encoding::for_label(label.as_bytes()) else {
             return problem(
@@ -81,17 +91,21 @@ pub(super) fn text<'a>(
         );
         return Ok(Cow::Owned(text.into_owned()));
     }
-    if bytes[..bytes.len().min(LOOKED_AT_BYTES)].contains(&0) {
+    if let Some(zero) = bytes[..bytes.len().min(LOOKED_AT_BYTES)]
+        .iter()
+        .position(|&byte| byte == 0)
+    {
         let encoding = if looks_like_utf16(&bytes, 1) {
             UTF_16LE
         } else if looks_like_utf16(&bytes, 0) {
             UTF_16BE
         } else {
-            return problem(
-                "the file holds zero bytes: it is not text".to_owned(),
+            return Err(Problem::new(
+                place.clone().at_line(line_at(&bytes, zero)),
+                "a zero byte: this is not text",
                 "plain text with one reading a line, or the same packed with gzip",
                 "export the readings as CSV",
-            );
+            ));
         };
         return problem(
             format!("the file looks like {} without its mark", encoding.name()),
@@ -146,6 +160,11 @@ fn unpack(place: &Place, bytes: &[u8], options: &ReadOptions) -> Result<Vec<u8>,
     Ok(unpacked)
 }
 
+/// The line that holds a byte, from 1.
+fn line_at(bytes: &[u8], at: usize) -> usize {
+    bytes[..at].iter().filter(|&&byte| byte == b'\n').count() + 1
+}
+
 fn size(bytes: u64) -> String {
     const MIB: u64 = 1024 * 1024;
     if bytes >= MIB && bytes.is_multiple_of(MIB) {
@@ -175,7 +194,7 @@ fn looks_like_utf16(bytes: &[u8], first: usize) -> bool {
 
 /// Bytes that are not UTF-8 and were not declared are read as Windows-1252, in which every byte is a letter.
 fn guess(place: &Place, bytes: &[u8], bad: usize, findings: &mut Vec<Finding>) -> String {
-    let line = bytes[..bad].iter().filter(|&&b| b == b'\n').count() + 1;
+    let line = line_at(bytes, bad);
     findings.push(
         Finding::new(
             Severity::Note,

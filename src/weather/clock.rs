@@ -119,17 +119,27 @@ fn begin(
 
 /// The usual distance between readings, an hour when there is none.
 fn step(local: &[i64]) -> i64 {
-    let mut steps: Vec<i64> = local
-        .windows(2)
-        .map(|w| w[1] - w[0])
-        .filter(|&step| step > 0)
-        .take(SAMPLED_STEPS)
-        .collect();
-    if steps.is_empty() {
-        return HOUR_S;
+    let sample = &local[..local.len().min(SAMPLED_STEPS)];
+    let usual = |times: &[i64]| {
+        let mut steps: Vec<i64> = times
+            .windows(2)
+            .map(|w| w[1] - w[0])
+            .filter(|&step| step > 0)
+            .collect();
+        let middle = steps.len() / 2;
+        if steps.is_empty() {
+            HOUR_S
+        } else {
+            *steps.select_nth_unstable(middle).1
+        }
+    };
+    if sample.is_sorted() {
+        return usual(sample);
     }
-    let middle = steps.len() / 2;
-    *steps.select_nth_unstable(middle).1
+    // Rows out of order tell their distance only once they are in order, and all of them together.
+    let mut sorted = local.to_vec();
+    sorted.sort_unstable();
+    usual(&sorted)
 }
 
 fn marks(

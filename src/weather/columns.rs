@@ -94,7 +94,11 @@ pub(super) fn settle(headings: &[String], choice: &ColumnChoice) -> Result<Colum
         settling.unclear.push(Unclear::None("temperature"));
     }
     let humidity = settling.value("humidity", &choice.humidity, Role::Humidity);
-    let dew_point = settling.value("dew point", &choice.dew_point, Role::DewPoint);
+    let dew_point = match (&humidity, &choice.dew_point) {
+        // Two columns for one quantity: the humidity is used.
+        (Some(_), None) => None,
+        _ => settling.value("dew point", &choice.dew_point, Role::DewPoint),
+    };
     let radiation = settling.value("radiation", &choice.radiation, Role::Radiation);
     let wind = settling.value("wind", &choice.wind, Role::Wind);
     let about_time = time.first().and_then(|columns| {
@@ -310,7 +314,9 @@ mod tests {
             (4, "c")
         );
         assert_eq!(found.humidity.map(|c| c.at), Some(5));
-        assert_eq!(found.dew_point.map(|c| c.at), Some(3));
+        assert_eq!(found.dew_point, None);
+        let found = settle_line("time,temp,dew point (C)", &Default::default()).unwrap();
+        assert_eq!(found.dew_point.map(|c| c.at), Some(2));
     }
 
     #[test]

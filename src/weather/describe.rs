@@ -121,6 +121,11 @@ pub fn describe(series: &[Weather], bases_c: &[f64]) -> Option<Description> {
         .filter(|year| year.hours + YEAR_SLACK_HOURS >= crate::calendar::HOURS_PER_YEAR)
         .collect();
     let degree_days = mean_degree_days(&whole).unwrap_or_else(|| total_degree_days(&by_year));
+    let colder = spread.colder(&PERCENTILES);
+    // The first two of the list are the design shares.
+    let [design_99_6_c, design_99_c, ..] = colder[..] else {
+        return None;
+    };
     Some(Description {
         hours: spread.hours,
         years: series.iter().map(|weather| weather.axis.years()).sum(),
@@ -128,12 +133,9 @@ pub fn describe(series: &[Weather], bases_c: &[f64]) -> Option<Description> {
         mean_c: spread.mean_c,
         min_c: spread.min_c,
         max_c: spread.max_c,
-        percentiles: PERCENTILES
-            .iter()
-            .map(|&share| (share, spread.colder(share)))
-            .collect(),
-        design_99_6_c: spread.colder(0.004),
-        design_99_c: spread.colder(0.01),
+        percentiles: PERCENTILES.into_iter().zip(colder).collect(),
+        design_99_6_c,
+        design_99_c,
         coldest_hour: coldest_hour(series)?,
         coldest_day: coldest_days_of(series, &days, 1),
         coldest_three_days: coldest_days_of(series, &days, 3),
@@ -266,8 +268,8 @@ fn coldest_days_of(
     })
 }
 
-/// Warns of weather that smooths the cold away: a typical year, or the average of many.
-fn unfit_for_peak_load(weather: &Weather) -> Option<Finding> {
+/// Warns of weather that smooths the cold away and must not judge peak load: a typical year, or the average of many.
+pub fn unfit_for_peak_load(weather: &Weather) -> Option<Finding> {
     let (what, done) = if let Some(change) = day_to_day_k(weather).filter(|&k| k < SMOOTH_K) {
         (
             format!(

@@ -56,27 +56,36 @@ impl<'a> Distribution<'a> {
         })
     }
 
-    /// The temperature that a share of the hours fall below: as many hours are colder as the share says, rounded down.
-    pub(super) fn colder(&self, share: f64) -> f64 {
-        let wanted = ((share * self.hours as f64).floor() as usize).min(self.hours - 1);
-        let mut before = 0;
-        for (class, &count) in (self.lowest..).zip(&self.counts) {
-            if wanted < before + count {
-                let mut members: Vec<f64> = self
-                    .columns
-                    .iter()
-                    .copied()
-                    .flatten()
-                    .copied()
-                    .filter(|&c| degree(c) == class)
-                    .collect();
-                return *members
-                    .select_nth_unstable_by(wanted - before, f64::total_cmp)
-                    .1;
-            }
-            before += count;
+    /// The temperatures that shares of the hours fall below: as many hours are colder as the share says, rounded down.
+    pub(super) fn colder(&self, shares: &[f64]) -> Vec<f64> {
+        // Where each share lies: its degree, and how many hours of that degree come before it.
+        let places: Vec<(usize, usize)> = shares
+            .iter()
+            .map(|share| {
+                let mut left = ((share * self.hours as f64).floor() as usize).min(self.hours - 1);
+                let class = self.counts.iter().position(|&count| {
+                    let here = left < count;
+                    left -= if here { 0 } else { count };
+                    here
+                });
+                (class.unwrap_or(0), left)
+            })
+            .collect();
+        let mut members: Vec<Option<Vec<f64>>> = vec![None; self.counts.len()];
+        for &(class, _) in &places {
+            members[class] = Some(Vec::with_capacity(self.counts[class]));
         }
-        self.max_c
+        for &c in self.columns.iter().copied().flatten() {
+            let class = usize::try_from(degree(c) - self.lowest).ok();
+            if let Some(Some(members)) = class.and_then(|class| members.get_mut(class)) {
+                members.push(c);
+            }
+        }
+        let mut nth = |&(class, left): &(usize, usize)| match members[class].as_mut() {
+            Some(members) => *members.select_nth_unstable_by(left, f64::total_cmp).1,
+            None => self.max_c,
+        };
+        places.iter().map(&mut nth).collect()
     }
 
     /// Hours from each whole degree up to the next; degrees without any are left out.
@@ -100,9 +109,11 @@ mod tests {
             .map(|i| f64::from(i) / 100.0 - 30.0)
             .collect();
         let spread = Distribution::new(vec![&hours]).unwrap();
-        assert_eq!(spread.colder(0.004), 35.0 / 100.0 - 30.0);
-        assert_eq!(spread.colder(0.01), 87.0 / 100.0 - 30.0);
-        assert_eq!(spread.colder(1.0), spread.max_c);
+        let found = spread.colder(&[0.004, 0.01, 1.0]);
+        assert_eq!(
+            found,
+            [35.0 / 100.0 - 30.0, 87.0 / 100.0 - 30.0, spread.max_c]
+        );
         assert!(Distribution::new(vec![&[]]).is_none());
     }
 
@@ -113,7 +124,7 @@ mod tests {
             let spread = Distribution::new(vec![&hours]).unwrap();
             let mut sorted = hours.clone();
             sorted.sort_by(f64::total_cmp);
-            prop_assert_eq!(spread.colder(share), sorted[(share * hours.len() as f64) as usize]);
+            prop_assert_eq!(spread.colder(&[share])[0], sorted[(share * hours.len() as f64) as usize]);
             for (degree, number) in spread.per_degree() {
                 prop_assert_eq!(sorted.iter().filter(|c| c.floor() as i32 == degree).count(), number);
             }

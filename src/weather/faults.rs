@@ -5,10 +5,10 @@ use super::layout::Layout;
 use super::row_reader::Fields;
 use super::rows::Rows;
 use super::words::{count, shorten};
-use crate::problem::{Place, Problem, Problems};
+use crate::problem::{Finding, Place, Problem, Problems, Severity};
 
 /// Problems of one kind that are written out; the rest are counted.
-const MOST_SHOWN: usize = 20;
+const MOST_SHOWN: usize = 5;
 
 /// Faulty rows: the first of each kind are written out, the rest counted.
 pub(super) struct Faults {
@@ -16,6 +16,8 @@ pub(super) struct Faults {
     problems: Problems,
     /// Kind, how many were seen, and the line of the last.
     seen: [(&'static str, usize, usize); 4],
+    /// Lines on which the heading stands again, as in files that were put together.
+    repeated_headings: Vec<usize>,
 }
 
 impl Faults {
@@ -30,12 +32,13 @@ impl Faults {
             place,
             problems: Problems::new(),
             seen: kinds.map(|kind| (kind, 0, 0)),
+            repeated_headings: Vec::new(),
         }
     }
 
     /// Whether there are none.
     pub(super) fn is_empty(&self) -> bool {
-        self.problems.is_empty()
+        self.problems.is_empty() && self.repeated_headings.is_empty()
     }
 
     /// Counts a fault; whether it is still to be written out.
@@ -56,9 +59,18 @@ impl Faults {
         if !self.count(0, line) {
             return;
         }
-        let longest = fields(row).map(<[u8]>::len).max().unwrap_or(0);
-        let remedy = if longest > 1000 {
+        let text = row_text(row, layout);
+        let other = [b';', b'\t', b'|', b',']
+            .into_iter()
+            .find(|&d| d != layout.delimiter && text.contains(char::from(d)));
+        let remedy = if fields(row).any(|field| field.contains(&b'\n') || field.len() > 1000) {
             "is a quotation mark left open?".to_owned()
+        } else if let Some(other) = other {
+            format!(
+                "this row has {}, the lines before have {}: make them alike",
+                delimiter_words(other),
+                delimiter_words(layout.delimiter)
+            )
         } else {
             format!(
                 "separate the fields by {}, or delete the line",
@@ -111,28 +123,27 @@ impl Faults {
         row: &impl Fields,
         layout: &Layout,
     ) {
+        let repeated = fields(row)
+            .zip(&layout.headings)
+            .all(|(field, heading)| String::from_utf8_lossy(field).trim() == heading.as_str());
+        if repeated && !layout.headings.is_empty() {
+            self.repeated_headings.push(line);
+            return;
+        }
         if !self.count(2, line) {
             return;
         }
         let words = form.words();
-        let repeated = fields(row)
-            .zip(&layout.headings)
-            .all(|(field, heading)| String::from_utf8_lossy(field).trim() == heading.as_str());
-        let found = if repeated && !layout.headings.is_empty() {
-            "the heading is repeated here".to_owned()
-        } else {
-            format!(
-                "\"{}\" is not a time in the form {words}",
-                shorten(&form.text(row))
-            )
-        };
         self.problems.push(Problem::new(
             self.at(
                 line,
                 layout,
                 layout.columns.time.first().map(|columns| columns.last()),
             ),
-            found,
+            format!(
+                "\"{}\" is not a time in the form {words}",
+                shorten(&form.text(row))
+            ),
             format!("times in the form {words}, as on the lines before"),
             "correct the line or delete it: a missing hour is repaired",
         ));
@@ -150,7 +161,22 @@ impl Faults {
         ));
     }
 
-    pub(super) fn finish(mut self, rows: Rows) -> Result<Rows, Problems> {
+    /// The rows when nothing is wrong with any, else the problems.
+    pub(super) fn finish(
+        mut self,
+        rows: Rows,
+        findings: &mut Vec<Finding>,
+    ) -> Result<Rows, Problems> {
+        for line in self.repeated_headings {
+            findings.push(
+                Finding::new(
+                    Severity::Note,
+                    "the heading is repeated here",
+                    "passed over",
+                )
+                .at(&self.place.clone().at_line(line)),
+            );
+        }
         for (kind, seen, last) in self.seen {
             if seen > MOST_SHOWN {
                 self.problems.push(Problem::new(

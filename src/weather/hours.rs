@@ -5,7 +5,7 @@ use std::sync::Arc;
 use chrono::DateTime;
 
 use super::clock::{ASIDE, Instants};
-use super::order::{Times, minutes};
+use super::order::{Times, minutes, phase};
 use super::rows::Rows;
 use super::values::Values;
 use super::words::count;
@@ -201,12 +201,9 @@ pub(super) fn hours(
 /// Whether the rows are hours in a row already, each on the hour, as in most files.
 fn is_whole(instants: &Instants) -> bool {
     let begins = &instants.begin_s;
-    let on_the_hour = begins
-        .first()
-        .and_then(|&first| DateTime::from_timestamp(first, 0))
-        .is_some_and(|first| {
-            (first.timestamp() + i64::from(instants.zone.offset_s(first))).rem_euclid(HOUR_S) == 0
-        });
+    let on_the_hour = begins.first().is_some_and(|&first| {
+        first != ASIDE && (first + phase(instants.zone, first)).rem_euclid(HOUR_S) == 0
+    });
     on_the_hour
         && begins
             .windows(2)
@@ -243,7 +240,7 @@ fn place_rows(
     let number = hour_of(last) - base + 1;
     if number > SPARSEST * i64::try_from(order.len()).unwrap_or(i64::MAX) + 240 {
         return Err(Problem::new(
-            place.clone(),
+            times.place_of(widest(&order, &times)),
             format!(
                 "{} are spread from {} to {}",
                 count(order.len(), "reading"),
@@ -292,6 +289,14 @@ fn place_rows(
 
 fn present(values: &[f64]) -> usize {
     values.iter().filter(|value| !value.is_nan()).count()
+}
+
+/// The row after the widest hole.
+fn widest(order: &[u32], times: &Times) -> u32 {
+    let steps = order
+        .windows(2)
+        .map(|w| (times.at(w[1]) - times.at(w[0]), w[1]));
+    steps.max().map_or(0, |(_, row)| row)
 }
 
 /// Means by hour; the rows are in order of time.

@@ -5,7 +5,7 @@ use std::sync::Arc;
 use super::columns::{self, Columns, TimeColumns, Unclear, ValueColumn};
 use super::date_form;
 use super::options::{Column, ReadOptions};
-use super::words::shorten;
+use super::words::{count, shorten};
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
 
 /// How many lines from the top may come before the readings, comments aside.
@@ -255,6 +255,18 @@ fn headed(
                 ties: Vec::new(),
             },
         );
+    }
+    if untouched && first_reading == Some(0) {
+        return Err(Problem::new(
+            place.clone().at_line(lines[0].number),
+            format!(
+                "the file has no headings for its {}",
+                count(rows[0].len(), "column")
+            ),
+            "a heading line above the readings",
+            "say by their numbers which columns hold the time and the temperature",
+        )
+        .into());
     }
     let (at, unclear) = nearest.unwrap_or((0, vec![Unclear::None("time")]));
     let number = lines.get(at).map_or(1, |line| line.number);

@@ -38,9 +38,11 @@ use std::ops::Range;
 
 use chrono::{DateTime, Datelike, Duration, Months, NaiveDate, Utc};
 
-pub use adjust::{Adjusted, Adjustment};
+pub use adjust::{Adjusted, Adjustment, STANDARD_LAPSE_K_PER_KM};
 pub use degree_days::{Rule, degree_days};
-pub use describe::{Description, Spell, YearFigures, coldest_days, describe};
+pub use describe::{
+    DegreeDays, Description, Spell, YearFigures, coldest_days, describe, unfit_for_peak_load,
+};
 pub use options::{
     Column, ColumnChoice, DateOrder, MAX_EXPANDED_BYTES, PartColumns, ReadOptions, RepairPolicy,
     StampMarks, TemperatureUnit,

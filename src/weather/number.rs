@@ -5,6 +5,8 @@ const MISSING_TEXTS: [&[u8]; 16] = [
     b"", b"na", b"n/a", b"nan", b"null", b"nil", b"none", b"-", b"--", b"---", b"m", b"missing",
     b"*", b"***", b"?", b"#n/a",
 ];
+/// Characters that a number may have.
+const LONGEST_NUMBER: usize = 64;
 /// Digits that fit a whole number of `f64` exactly.
 const EXACT_DIGITS: usize = 15;
 /// Powers of ten that are exact in `f64` and that this many digits can need.
@@ -92,6 +94,10 @@ fn slow(field: &[u8], decimal_comma: bool) -> Reading {
         .any(|text| text.eq_ignore_ascii_case(field))
     {
         return Reading::Missing;
+    }
+    // No reading is that long, whatever it says.
+    if field.len() > LONGEST_NUMBER {
+        return Reading::Other;
     }
     let Ok(text) = std::str::from_utf8(field) else {
         return Reading::Other;

@@ -39,15 +39,15 @@ impl Times<'_> {
             .unwrap_or(0)
     }
 
-    fn place_of(&self, row: u32) -> Place {
+    /// The file and line of a row.
+    pub(super) fn place_of(&self, row: u32) -> Place {
         self.place.clone().at_line(self.line(row))
     }
 
-    /// Seconds that the zone's hours lie off those of UTC at a row.
+    /// Seconds that the hours of the file lie off those of UTC: none where its stamps are whole hours in UTC, else what the
+    /// zone's own hours are off.
     pub(super) fn phase(&self, row: u32) -> i64 {
-        DateTime::from_timestamp(self.at(row), 0).map_or(0, |instant| {
-            i64::from(self.zone.offset_s(instant)).rem_euclid(HOUR_S)
-        })
+        phase(self.zone, self.at(row))
     }
 
     /// The rows that are used, in order of time; each step back is reported.
@@ -168,6 +168,17 @@ impl Times<'_> {
             );
         }
         (kept, doubled)
+    }
+}
+
+/// Seconds that hours beginning at an instant lie off those of UTC, see [`Times::phase`].
+pub(super) fn phase(zone: Zone, instant_s: i64) -> i64 {
+    let off = DateTime::from_timestamp(instant_s, 0)
+        .map_or(0, |instant| i64::from(zone.offset_s(instant)));
+    if instant_s.rem_euclid(HOUR_S) == 0 {
+        0
+    } else {
+        off.rem_euclid(HOUR_S)
     }
 }
 

@@ -128,7 +128,7 @@ pub(super) fn rows(
         &how,
         &place,
     );
-    faults.finish(rows)
+    faults.finish(rows, findings)
 }
 
 fn has_decimal_comma(sample: &[csv::ByteRecord], layout: &Layout) -> bool {

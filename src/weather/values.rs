@@ -17,8 +17,8 @@ const BEARABLE_COUNT: usize = 3;
 const HOTTEST_MEAN_C: f64 = 32.0;
 /// Readings a little below nothing, as pyranometers give at night, W/m².
 const NIGHT_OFFSET_W_PER_M2: f64 = -20.0;
-/// Relative humidity up to this is saturation read by a sensor that is slightly off, %.
-const SATURATED_PERCENT: f64 = 105.0;
+/// Relative humidity up to this is saturation read by a sensor that is slightly off.
+const SATURATED: f64 = 1.05;
 /// Hourly mean wind.
 const WIND_M_PER_S: Bound = Bound {
     label: "wind speed",
@@ -262,8 +262,8 @@ fn temperature(
             Finding::new(
                 Severity::Note,
                 format!(
-                    "{} such as {reading} mark a missing temperature",
-                    count(marked, "number")
+                    "{reading} stands for a missing temperature in {}",
+                    count(marked, "row")
                 ),
                 "taken as missing",
             )
@@ -305,9 +305,9 @@ fn humidity(
             let greatest = values
                 .iter()
                 .copied()
-                .filter(|x| x.is_finite() && *x <= SATURATED_PERCENT)
+                .filter(|x| x.is_finite() && *x <= SATURATED * 100.0)
                 .fold(0.0, f64::max);
-            let fraction = greatest <= 1.05;
+            let fraction = greatest <= SATURATED;
             if fraction {
                 note(
                     format!("no unit is stated for relative humidity up to {greatest}"),
@@ -319,10 +319,10 @@ fn humidity(
     };
     let mut odd = 0;
     for value in &mut values {
-        let percent = if fraction { *value * 100.0 } else { *value };
-        *value = if (0.0..=100.0).contains(&percent) {
-            percent / 100.0
-        } else if percent > 100.0 && percent <= SATURATED_PERCENT {
+        let share = if fraction { *value } else { *value / 100.0 };
+        *value = if (0.0..=1.0).contains(&share) {
+            share
+        } else if share > 1.0 && share <= SATURATED {
             1.0
         } else {
             odd += usize::from(!value.is_nan());

@@ -1,13 +1,17 @@
 //! Words for messages.
 
-/// A text short enough for a message.
+/// A text short enough for a message, on one line.
 pub(super) fn shorten(text: &str) -> String {
-    const MOST: usize = 120;
-    if text.chars().count() <= MOST {
-        return text.to_owned();
+    const MOST: usize = 80;
+    let mut start: String = text
+        .chars()
+        .take(MOST)
+        .map(|c| if c.is_control() { ' ' } else { c })
+        .collect();
+    if text.chars().nth(MOST).is_some() {
+        start.push('…');
     }
-    let start: String = text.chars().take(MOST).collect();
-    format!("{start}…")
+    start
 }
 
 /// `1 field`, `3 fields`.

@@ -17,7 +17,7 @@ mod totals;
 pub use ledger::Ledger;
 pub use metered::{Household, Metered};
 pub use row::{COLUMNS, Column, Flags, Row, Sums};
-pub use site::{OwnGeneration, Plan, Signal, Site};
+pub use site::{OwnGeneration, Plan, Recovery, Signal, Site};
 pub use step::{DutyKind, Probe, Unwatched, run, step};
 pub use system::{Heating, HybridSystem, MachineSystem, State, System};
 pub use totals::Totals;

@@ -71,10 +71,11 @@ ledger! {
         fabric_loss_kwh: "heat lost through fabric and ventilation";
         aired_kwh: "gains aired out because the rooms grew too warm";
         room_stored_kwh: "heat stored in the fabric, negative when it is given back";
-        space_wanted_kwh: "heat that would have held the set point";
+        space_wanted_kwh: "heat that would have held the set point or warmed up for the next";
         machine_space_kwh: "heat of the machine to the rooms";
         heater_space_kwh: "heat of the boiler or electric heater to the rooms";
         water_drawn_kwh: "hot water drawn at the taps";
+        water_missing_kwh: "hot water asked for that the store no longer held";
         store_loss_kwh: "standing loss of the hot-water store";
         store_stored_kwh: "heat stored in the hot-water store, negative when it is given back";
         machine_water_kwh: "heat of the machine to hot water";
@@ -111,6 +112,7 @@ ledger! {
         store_c: "hot-water store at the end of the hour";
         space_flow_c: "flow to the emitters while heat is made";
         space_return_c: "return from the emitters";
+        machine_flow_c: "flow leaving the machine for the rooms, above that to the emitters by what a header mixes away";
         water_flow_c: "flow to the hot-water coil, mean of the block";
         space_cop: "heat over electricity of the machine for the rooms";
         water_cop: "heat over electricity of the machine for hot water";
@@ -150,6 +152,14 @@ flags! {
     IMMERSION = 7, "immersion";
     /// The rooms ended the hour more than the stated tolerance below the set point.
     SHORT = 8, "short of heat";
+    /// The rooms were being warmed up for a higher set point.
+    RECOVERY = 9, "warming up";
+    /// Hot water came out too cool.
+    WATER_SHORT = 10, "short of hot water";
+    /// A hygiene cycle of the hot-water store was under way.
+    HYGIENE = 11, "hygiene cycle";
+    /// The control's flow carried less heat than was wanted.
+    FLOW_TOO_COOL = 12, "flow set too cool";
 }
 
 impl Flags {

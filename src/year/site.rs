@@ -3,6 +3,7 @@
 use std::ops::Range;
 
 use crate::calendar::{CivilHour, HourAxis};
+use crate::home::Fabric;
 
 /// Weather and clock of every hour of the axis; shared by all systems.
 #[derive(Debug, Clone, PartialEq)]
@@ -75,6 +76,44 @@ impl Signal {
     }
 }
 
+/// How rooms that were let cool are warmed up again before a higher set point is due.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Recovery {
+    /// Hours until the set point rises, counted from the beginning of each hour; 0 where nothing is to be warmed up yet.
+    pub hours_ahead: Vec<u8>,
+    /// The set point that is due then, °C.
+    pub target_c: Vec<f64>,
+    /// The warm-up begins once it would take more than this, kW; 0 to begin at once.
+    pub begins_above_kw: f64,
+    /// Nothing is heated ahead; once a spell has begun, a thermostat asks for all the heat there is.
+    pub at_the_time: bool,
+}
+
+impl Recovery {
+    /// Heat that brings the rooms to the set point in time, kW; 0 while there is time yet.
+    ///
+    /// The even heat that arrives in time is asked for, so that a heat pump can run long and cool.
+    pub fn heat_kw(
+        &self,
+        hour: usize,
+        fabric: &Fabric,
+        room_c: f64,
+        outdoor_c: f64,
+        gains_kw: f64,
+        under_way: &mut bool,
+    ) -> f64 {
+        let hours = self.hours_ahead[hour];
+        if hours == 0 || !fabric.stores_heat() {
+            *under_way = false;
+            return 0.0;
+        }
+        let target_c = self.target_c[hour];
+        let even_kw = fabric.heat_to_reach_in_kw(hours, room_c, target_c, outdoor_c, gains_kw);
+        *under_way |= even_kw > self.begins_above_kw;
+        if *under_way { even_kw } else { 0.0 }
+    }
+}
+
 /// Set points and signals hour by hour, made before the run.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Plan {
@@ -86,8 +125,23 @@ pub struct Plan {
     pub backup_below_c: Vec<f64>,
     /// How much hotter than its set point the hot-water store is made in an hour, K; nothing where it is never shifted.
     pub store_shift_k: Option<Vec<f64>>,
+    /// The warm-up before a higher set point; none when the set point is the same all day.
+    pub recovery: Option<Recovery>,
+    /// Rooms are aired from a few kelvins above this, °C: the highest set point.
+    pub comfort_c: f64,
     /// Electricity.
     pub electricity: Signal,
     /// The fuel the system burns, if it burns one.
     pub fuel: Option<Signal>,
+}
+
+impl Plan {
+    /// The same signals with the set points of another plan.
+    pub fn with_set_points_of(&self, other: &Plan) -> Plan {
+        Plan {
+            electricity: self.electricity.clone(),
+            fuel: self.fuel.clone(),
+            ..other.clone()
+        }
+    }
 }

@@ -7,12 +7,16 @@ use super::hybrid::{Asked, hybrid_hour};
 use super::row::{Flags, Row};
 use super::site::{Plan, Site};
 use super::system::{Heating, MachineSystem, State, System};
+use crate::calendar::CivilHour;
 use crate::heater::Boiler;
 use crate::heatpump::{ColdSide, Delivered, Duty};
-use crate::home::{Home, StoreStep, WaterTemperatures};
+use crate::home::{Control, Home, StoreStep, Tapped, WaterTemperatures};
 
 /// Rooms this much below the set point at the end of an hour are short of heat, K. A choice of ours: about what people notice.
 const SHORT_K: f64 = 1.0;
+
+/// A heat that is short by less than this share is short by rounding only.
+const ROUNDING: f64 = 1e-9;
 
 /// Less than this part of an hour is not worth a start, h.
 const LEAST_RUN_H: f64 = 1e-6;
@@ -89,19 +93,31 @@ pub fn step<P: Probe>(
         .store_shift_k
         .as_ref()
         .map_or(0.0, |column| column[hour]);
-    let water = draw(home, site.civil[hour].hour, shift_k, state, &mut row);
+    let water = draw(home, &site.civil[hour], shift_k, state, &mut row);
     let reach = |target_c| {
         home.fabric
             .heat_to_reach_kwh(state.room_c, target_c, outdoor_c, gains_kw)
     };
-    let wanted_kw = home
-        .fabric
-        .heat_wanted_kw(state.room_c, set_point_c, outdoor_c, gains_kw);
+    let mut wanted_kw = match &plan.recovery {
+        Some(recovery) if recovery.at_the_time => reach(set_point_c),
+        _ => home
+            .fabric
+            .heat_wanted_kw(state.room_c, set_point_c, outdoor_c, gains_kw),
+    };
+    if let Some(recovery) = &plan.recovery {
+        let under_way = &mut state.recovering;
+        let fabric = &home.fabric;
+        let warm_up_kw =
+            recovery.heat_kw(hour, fabric, state.room_c, outdoor_c, gains_kw, under_way);
+        row.flags |= Flags::RECOVERY.when(warm_up_kw > 0.0);
+        wanted_kw = wanted_kw.max(warm_up_kw);
+    }
     row.space_wanted_kwh = wanted_kw;
     let rooms = Rooms {
         wanted_kw: wanted_kw.min(home.emitters.greatest_output_kw()),
         least_kwh: reach(plan.backup_below_c[hour]),
         room_c: state.room_c,
+        outdoor_c,
     };
 
     // What answers.
@@ -154,7 +170,7 @@ pub fn step<P: Probe>(
         row.space_heat_kwh(),
         outdoor_c,
         gains_kw,
-        set_point_c,
+        plan.comfort_c,
     );
     state.room_c = room.end_c;
     row.indoor_c = room.end_c;
@@ -191,45 +207,60 @@ pub(super) struct Rooms {
     pub least_kwh: f64,
     /// Their temperature at the beginning of the hour, °C.
     pub room_c: f64,
+    /// Outdoor air, °C: what a compensation line follows.
+    pub outdoor_c: f64,
 }
 
 /// Draws an hour's hot water and says what its heater must bring.
-fn draw(home: &Home, clock_hour: u8, shift_k: f64, state: &State, row: &mut Row) -> StoreStep {
-    let nothing = StoreStep {
-        before_c: state.store_c,
+fn draw(home: &Home, clock: &CivilHour, shift_k: f64, state: &State, row: &mut Row) -> StoreStep {
+    let mut step = StoreStep {
+        before_c: state.store.mean_c,
         drawn_kwh: 0.0,
         lost_kwh: 0.0,
         wanted_kwh: 0.0,
+        target_c: 0.0,
+        machine_target_c: 0.0,
+        too_cool: false,
+        hygiene: false,
     };
     let Some(water) = &home.hot_water else {
-        return nothing;
+        return step;
     };
-    let drawn_kwh = water.drawn_kwh(clock_hour);
-    let step = match &water.store {
-        Some(store) => store
-            .shifted(shift_k)
-            .step(state.store_c, drawn_kwh, state.charging),
-        None => StoreStep {
-            drawn_kwh,
-            wanted_kwh: drawn_kwh,
-            ..nothing
-        },
+    let tapped = Tapped {
+        kwh: water.drawn_kwh(clock.month0(), clock.hour),
+        draw_c: water.draw_c,
+        cold_c: water.cold_c[clock.month0()],
     };
+    match &water.store {
+        Some(store) => step = store.shifted(shift_k).step(&state.store, &tapped, clock),
+        None => {
+            step.drawn_kwh = tapped.kwh;
+            step.wanted_kwh = tapped.kwh;
+        }
+    }
     row.water_drawn_kwh = step.drawn_kwh;
+    row.water_missing_kwh = tapped.kwh - step.drawn_kwh;
     row.store_loss_kwh = step.lost_kwh;
+    row.flags |= Flags::WATER_SHORT.when(step.too_cool) | Flags::HYGIENE.when(step.hygiene);
     step
 }
 
 /// Puts the hour's heat into the store.
 fn store_hour(home: &Home, water: &StoreStep, state: &mut State, row: &mut Row) {
     let Some(store) = home.hot_water.as_ref().and_then(|water| water.store) else {
+        // What is heated as it is drawn comes out as hot as the heater can make it.
+        let missing_kwh = (water.wanted_kwh - row.water_heat_kwh()).max(0.0);
+        if missing_kwh > 1e-9 {
+            row.water_drawn_kwh -= missing_kwh;
+            row.water_missing_kwh += missing_kwh;
+            row.flags |= Flags::WATER_SHORT;
+        }
         return;
     };
     let heat_kwh = row.water_heat_kwh();
     row.store_stored_kwh = heat_kwh - water.drawn_kwh - water.lost_kwh;
-    state.store_c = store.charged_c(water.before_c, heat_kwh);
-    state.charging = water.wanted_kwh > 0.0 && heat_kwh < water.wanted_kwh * (1.0 - 1e-9);
-    row.store_c = Some(state.store_c);
+    state.store = store.after(water, heat_kwh);
+    row.store_c = Some(state.store.mean_c);
 }
 
 /// Tells the source what was drawn, and charges its pump.
@@ -259,23 +290,30 @@ pub(super) fn heat_pump_hour<P: Probe>(
         if hours_left > LEAST_RUN_H {
             // What hot water took from the hour is left to the fabric's storage: a compensated flow is not raised for it.
             let ask = |heat_kw: f64| {
-                let warm = home.emitters.at_load(heat_kw, rooms.room_c);
+                let warm = home.emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
                 Duty {
-                    heat_kw,
-                    flow_c: warm.flow_c,
-                    spread_k: warm.flow_c - warm.return_c,
+                    heat_kw: warm.heat_kw,
+                    flow_c: warm.water.flow_c + home.emitters.header_k(),
+                    spread_k: warm.spread_k,
                     hours: hours_left,
                     at_full_output: false,
                 }
             };
             let (duty, delivered) = in_balance(system, cold, rooms.wanted_kw, ask);
+            let asked_kw = rooms.wanted_kw * (1.0 - ROUNDING);
+            let by_control = duty.heat_kw < asked_kw && !delivered.flags.short;
+            row.flags |= Flags::FLOW_TOO_COOL.when(by_control);
             probe.see(DutyKind::SpaceHeat, cold, &duty, &delivered);
             row.machine_space_kwh = delivered.heat_kwh;
             row.machine_space_electricity_kwh = charge(row, &delivered);
             row.space_cop = cop(delivered.heat_kwh, row.machine_space_electricity_kwh);
             if delivered.heat_kwh > 0.0 {
-                row.space_flow_c = Some(delivered.flow_c);
-                row.space_return_c = Some(delivered.flow_c - delivered_spread_k(&duty, &delivered));
+                let to_emitters_c = delivered.flow_c - home.emitters.header_k();
+                let throttled_k = throttled_k(home, rooms, duty.heat_kw);
+                row.machine_flow_c = Some(delivered.flow_c);
+                row.space_flow_c = Some(to_emitters_c);
+                row.space_return_c =
+                    Some(to_emitters_c - throttled_k - delivered_spread_k(&duty, &delivered));
             }
         }
         row.backup_kwh = (rooms.least_kwh - row.machine_space_kwh).clamp(0.0, system.backup_kw);
@@ -283,7 +321,10 @@ pub(super) fn heat_pump_hour<P: Probe>(
         row.circulation_kwh = system.circulation_kw * hours_left;
     }
     let idle = system.machine.idle();
-    let at_rest_kw = if row.running_hours > 0.0 || rooms.wanted_kw > 0.0 {
+    // The cycling coefficient of EN 14825 already holds what a cycling machine takes while it stands.
+    let at_rest_kw = if row.flags.has(Flags::CYCLING) {
+        0.0
+    } else if row.running_hours > 0.0 || rooms.wanted_kw > 0.0 {
         idle.thermostat_off_kw
     } else {
         idle.standby_kw + idle.crankcase_kw
@@ -320,6 +361,17 @@ fn in_balance(
     (duty, delivered)
 }
 
+/// By how much the valves cool the return below that of the designed water flow, K.
+fn throttled_k(home: &Home, rooms: &Rooms, heat_kw: f64) -> f64 {
+    match home.emitters.control() {
+        Control::FollowingLoad => 0.0,
+        Control::Line { .. } | Control::Fixed(_) => {
+            let warm = home.emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
+            warm.water.flow_c - warm.water.return_c - warm.spread_k
+        }
+    }
+}
+
 /// Flow minus return while the machine runs: the design water flow carries the heat of the running time.
 fn delivered_spread_k(duty: &Duty, delivered: &Delivered) -> f64 {
     let mean_kw = duty.heat_kw * duty.hours;
@@ -343,9 +395,7 @@ fn hot_water_block<P: Probe>(
         return 0.0;
     };
     let reachable_c = system.machine.limits().highest_flow_at(cold.open_c) - store.coil_k;
-    // The end of the block: the set point, shifted where the plan shifts it.
-    let target_c = water.before_c + water.wanted_kwh / store.capacity_kwh_per_k;
-    let end_c = target_c.min(reachable_c);
+    let end_c = water.machine_target_c.min(reachable_c);
     let machine_kwh =
         ((end_c - water.before_c) * store.capacity_kwh_per_k).clamp(0.0, water.wanted_kwh);
     let mut used_hours = 0.0;
@@ -427,7 +477,13 @@ pub(super) fn boiler_hour(
     row.fuel_kwh = row.heater_water_kwh / boiler.water_efficiency(has_store);
     row.heater_space_kwh = rooms.wanted_kw.min(boiler.output_kw - row.heater_water_kwh);
     if row.heater_space_kwh > 0.0 {
-        let follows = home.emitters.at_load(row.heater_space_kwh, rooms.room_c);
+        let supply = home
+            .emitters
+            .supply(row.heater_space_kwh, rooms.room_c, rooms.outdoor_c);
+        row.flags |=
+            Flags::FLOW_TOO_COOL.when(supply.heat_kw < row.heater_space_kwh * (1.0 - ROUNDING));
+        row.heater_space_kwh = supply.heat_kw;
+        let follows = supply.water;
         // Fixed: it fires at its set flow with the emitters' design spread and lets the valves throttle.
         let warm = fixed_flow_c.map_or(follows, |flow_c| WaterTemperatures {
             flow_c,

@@ -2,7 +2,7 @@
 
 use crate::heater::{Boiler, HybridRule};
 use crate::heatpump::HeatPump;
-use crate::home::Home;
+use crate::home::{Home, StoreState};
 use crate::source::{Memory, Source};
 
 /// A home and what heats it.
@@ -104,10 +104,10 @@ pub struct MachineSystem {
 pub struct State {
     /// Rooms, °C.
     pub room_c: f64,
-    /// Hot-water store, °C; its set point where there is no store.
-    pub store_c: f64,
-    /// Whether a block of hot water is under way.
-    pub charging: bool,
+    /// Whether the rooms are being warmed up for a higher set point.
+    pub recovering: bool,
+    /// Hot-water store; full, and of no meaning where there is none.
+    pub store: StoreState,
     /// What the ground remembers of past draws.
     pub ground: Memory,
 }
@@ -116,17 +116,22 @@ impl State {
     /// Puts rooms and store to other temperatures (°C), no block of hot water under way; what else lasts stays.
     pub fn place(&mut self, room_c: f64, store_c: f64) {
         self.room_c = room_c;
-        self.store_c = store_c;
-        self.charging = false;
+        self.store.mean_c = store_c;
+        self.store.charging = false;
     }
 
     /// Rooms and store at their set points.
     pub fn at_rest(system: &System, set_point_c: f64) -> Self {
         let store = system.home.hot_water.as_ref().and_then(|water| water.store);
+        let none = StoreState {
+            mean_c: set_point_c,
+            charging: false,
+            hygiene: false,
+        };
         Self {
             room_c: set_point_c,
-            store_c: store.map_or(set_point_c, |store| store.set_point_c),
-            charging: false,
+            recovering: false,
+            store: store.map_or(none, |store| store.full()),
             ground: Memory::default(),
         }
     }

@@ -19,6 +19,8 @@ pub struct Totals<'a> {
     pub hours_backup: u32,
     /// Hours that ended short of heat.
     pub hours_short: u32,
+    /// Hours in which hot water came out too cool.
+    pub hours_water_short: u32,
     /// Hours in which the machine stood because its source was outside its limits.
     pub hours_stopped: u32,
     /// Lowest temperature of air, brine or water entering the machine, °C; infinite when it never ran.
@@ -36,6 +38,7 @@ impl<'a> Totals<'a> {
             peak_electric_kw: 0.0,
             hours_backup: 0,
             hours_short: 0,
+            hours_water_short: 0,
             hours_stopped: 0,
             min_source_c: f64::INFINITY,
         }
@@ -60,6 +63,7 @@ impl Sink for Totals<'_> {
         let backed = row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION);
         self.hours_backup += u32::from(backed);
         self.hours_short += u32::from(row.flags.has(Flags::SHORT));
+        self.hours_water_short += u32::from(row.flags.has(Flags::WATER_SHORT));
         self.hours_stopped += u32::from(row.flags.has(Flags::MACHINE_STOPPED));
         self.min_source_c = self.min_source_c.min(row.source_c.unwrap_or(f64::INFINITY));
     }

@@ -2,8 +2,9 @@
 
 use crate::common::*;
 use winterledger::chart::{
-    BreakEven, BreakEvenLine, BrineLine, BrineYear, Contours, CumulativeSpend, Swing, Swings,
-    SystemSpend, break_even, brine_year, calendar_months, contours, cumulative_spend, swings,
+    BreakEven, BreakEvenLine, BrineLine, BrineYear, Contours, CumulativeSpend, MeterPoint,
+    SignaturePlot, Swing, Swings, SystemSpend, break_even, brine_year, calendar_months, contours,
+    cumulative_spend, signature_plot, swings,
 };
 
 fn swing(label: &str, low_text: &str, high_text: &str, low: f64, high: f64) -> Swing {
@@ -280,5 +281,66 @@ fn brine_hostile() {
     check(
         "brine_hostile",
         &brine_year(&data, &english()).expect("drawn"),
+    );
+}
+
+fn meter() -> SignaturePlot {
+    let point = |i: u32, outdoor_c: f64, kwh_per_day: f64, odd| MeterPoint {
+        outdoor_c,
+        kwh_per_day,
+        name: format!("2023-{i:02}-01 to 2023-{:02}-01", i + 1),
+        odd,
+    };
+    SignaturePlot {
+        points: vec![
+            point(1, 5.1, 71.0, false),
+            point(2, 3.4, 79.0, false),
+            point(3, 5.5, 68.0, false),
+            point(4, 9.1, 81.0, true),
+            point(5, 13.0, 24.5, false),
+            point(6, 13.5, 22.0, false),
+            point(7, 16.8, 9.4, false),
+        ],
+        base_load_kwh_per_day: 8.1,
+        slope_kwh_per_k_day: 5.8,
+        base_temperature_c: 15.9,
+        heat_loss_w_per_k: 197.0,
+        heat_loss_95: (181.0, 213.0),
+    }
+}
+
+#[test]
+fn signature_realistic() {
+    check(
+        "signature_realistic",
+        &signature_plot(&meter(), &english()).expect("drawn"),
+    );
+}
+
+#[test]
+fn signature_hostile() {
+    let mut data = meter();
+    for (point, name) in data.points.iter_mut().zip(NAMES.iter().cycle()) {
+        point.name = (*name).into();
+        point.odd = true;
+    }
+    data.points.push(MeterPoint {
+        outdoor_c: -60.0,
+        kwh_per_day: 1e9,
+        name: long_name(),
+        odd: true,
+    });
+    check(
+        "signature_hostile",
+        &signature_plot(&data, &english()).expect("drawn"),
+    );
+    data.points.truncate(1);
+    data.base_temperature_c = -40.0;
+    data.slope_kwh_per_k_day = 0.0;
+    data.base_load_kwh_per_day = 0.0;
+    data.points[0].kwh_per_day = 0.0;
+    check(
+        "signature_nothing",
+        &signature_plot(&data, &english()).expect("drawn"),
     );
 }

@@ -1,10 +1,11 @@
 //! From the tables of a ground source to a source.
 
 mod buried;
+mod circuit;
+mod layout;
 mod tables;
 mod well;
 
-pub(super) use buried::whole_within;
 pub(super) use tables::{
     BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
 };
@@ -13,7 +14,7 @@ use super::defaults;
 use super::notes::Notes;
 use super::raw::SystemTable;
 use super::system::Surroundings;
-use crate::bounds;
+use crate::bounds::{self, Bound};
 use crate::document::{Check, Leaf, Section};
 use crate::heatpump::HeatPump;
 use crate::problem::Finding;
@@ -184,4 +185,23 @@ fn quick(ground: &Ground<'_>, check: &mut Check, notes: &mut Notes) -> Option<Gr
         undisturbed_c,
         resistance_k_per_kw: resistance?.k_per_kw(),
     })
+}
+
+/// A whole number within a bound, when it is there and right.
+pub(super) fn whole_within(
+    check: &mut Check,
+    leaf: &Option<Leaf<i64>>,
+    bound: &Bound,
+) -> Option<f64> {
+    let value = check.value(leaf)? as f64;
+    if let (false, Some(leaf)) = (bound.holds(value), leaf) {
+        check.refuse(
+            &leaf.span(),
+            format!("{value}"),
+            bound.words(),
+            "check the number",
+        );
+        return None;
+    }
+    Some(value)
 }

@@ -4,8 +4,7 @@ use chrono_tz::Tz;
 
 use super::super::defaults;
 use super::super::notes::Notes;
-use super::buried::whole_within;
-use super::{Ground, WellTable};
+use super::{Ground, WellTable, whole_within};
 use crate::bounds;
 use crate::document::{Check, Section};
 use crate::problem::{Finding, Severity};
@@ -39,7 +38,7 @@ pub(super) fn well(
         flow_l_per_s: flow?.l_per_s(),
         pump_kw: pump_kw?,
     };
-    let draw_kw = super::buried::rated_draw_kw(ground.machine?);
+    let draw_kw = ground.machine?.rated_draw_kw();
     let coldest =
         (0..made.water_c.len()).min_by(|a, b| made.water_c[*a].total_cmp(&made.water_c[*b]))?;
     let leaving_c = made.leaving_c(coldest, draw_kw);

@@ -194,7 +194,7 @@ mod tests {
     use super::*;
 
     /// The regression example of EN 14825 for a fixed-capacity machine (inputs \[from memory\], result computed; methods §1).
-    /// Its COP is corrected at the points; correcting bin by bin instead would give 3.625 and 3.674.
+    /// Its COP is corrected at the points; bin by bin would give 3.625 and 3.674 (`tests/reference/rating.py`).
     #[test]
     fn the_worked_example_comes_out_to_its_printed_digits() {
         let declared = [

@@ -133,24 +133,32 @@ impl Bench {
     }
 
     /// Capacity nearest to a load and the COP at it.
+    ///
+    /// A machine that goes on and off is tested at the hotter flow that it really runs at: EN 14825 sets its outlet so that the
+    /// mean over on and off is the application's flow temperature, with the full standard spread while running.
     fn point(&self, outdoor_c: f64, load_kw: f64) -> Option<RatingPoint> {
-        let (cold, flow_c) = (self.cold(outdoor_c), self.flow_c(outdoor_c));
-        let greatest = self.machine.greatest_output_kw(&cold, flow_c);
+        let (cold, mean_c) = (self.cold(outdoor_c), self.flow_c(outdoor_c));
+        let greatest = self.machine.greatest_output_kw(&cold, mean_c);
         if greatest <= 0.0 {
             return None;
         }
-        let least = self.machine.least_output_kw(&cold, flow_c);
-        let capacity_kw = load_kw.clamp(least, greatest);
-        let delivered = self.machine.deliver(
-            &cold,
-            &Duty {
-                heat_kw: capacity_kw,
-                flow_c,
-                spread_k: default_spread_k(flow_c),
-                hours: 1.0,
-                at_full_output: false,
-            },
-        );
+        let spread_k = default_spread_k(mean_c);
+        let share = load_kw / self.machine.least_output_kw(&cold, mean_c);
+        let duty = |heat_kw: f64, flow_c: f64| Duty {
+            heat_kw,
+            flow_c,
+            spread_k: spread_k * share.min(1.0),
+            hours: 1.0,
+            at_full_output: false,
+        };
+        let (capacity_kw, flow_c) = if share < 1.0 {
+            let running = self.machine.deliver(&cold, &duty(load_kw, mean_c));
+            let flow_c = running.flow_c;
+            (self.machine.least_output_kw(&cold, flow_c), flow_c)
+        } else {
+            (load_kw.min(greatest), mean_c)
+        };
+        let delivered = self.machine.deliver(&cold, &duty(capacity_kw, flow_c));
         Some(RatingPoint {
             outdoor_c,
             capacity_kw,

@@ -205,7 +205,7 @@ impl<'a> Search<'a> {
             let total = cost
                 + self
                     .grid
-                    .at(&self.to_go[h + 1], state.room_c, state.store_c);
+                    .at(&self.to_go[h + 1], state.room_c, state.store.mean_c);
             if total < best.1 {
                 best = (action, total);
             }

@@ -45,8 +45,9 @@ pub fn timer(plan: &Plan, civil: &[CivilHour], shifting: &Shifting) -> Plan {
 mod tests {
     use super::*;
     use crate::calendar::HourAxis;
+    use crate::home::Pattern;
     use crate::plan::shift::Latitude;
-    use crate::plan::steady;
+    use crate::plan::{Ability, following};
     use crate::year::Signal;
 
     fn shifted(price: impl Fn(usize) -> f64) -> Plan {
@@ -55,7 +56,12 @@ mod tests {
             hours: 48,
         };
         let signal = Signal::bought((0..48).map(price).collect(), vec![0.2; 48]);
-        let plan = steady(48, 20.0, 0.5, signal, None);
+        let ability = Ability {
+            output_kw: 6.0,
+            backup_band_k: 0.5,
+        };
+        let civil = axis.civil(chrono_tz::Tz::UTC);
+        let plan = following(&Pattern::continuous(20.0), &civil, ability, signal, None);
         let shifting = Shifting {
             rooms: Latitude {
                 above_k: 1.5,
@@ -66,7 +72,7 @@ mod tests {
                 below_k: 0.0,
             },
         };
-        timer(&plan, &axis.civil(chrono_tz::Tz::UTC), &shifting)
+        timer(&plan, &civil, &shifting)
     }
 
     #[test]

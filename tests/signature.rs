@@ -1,0 +1,313 @@
+//! The energy signature against scipy and statsmodels on the same readings, against homes whose truth is known, and through the
+//! command on the shipped readings.
+#![cfg(test)]
+
+use std::collections::BTreeMap;
+use std::fs;
+use std::path::Path;
+
+use assert_cmd::Command;
+use chrono::{Days, NaiveDate};
+use statrs::distribution::{ContinuousCDF, Normal};
+use winterledger::signature::{DailyWeather, Day, Interval, Signature, Stated, fit};
+
+fn root() -> &'static Path {
+    Path::new(env!("CARGO_MANIFEST_DIR"))
+}
+
+fn rows(name: &str) -> Vec<Vec<String>> {
+    csv::Reader::from_path(root().join("tests/reference").join(name))
+        .unwrap()
+        .records()
+        .map(|record| record.unwrap().iter().map(str::to_owned).collect())
+        .collect()
+}
+
+/// Nothing stated: the plain three-parameter fit.
+const PLAIN: Stated = Stated {
+    efficiency: 1.0,
+    efficiency_within: 0.0,
+    hot_water_share: 0.0,
+    hot_water_share_within: 0.0,
+    hot_water_swing: 0.0,
+};
+
+/// Reference values: tests/reference/signature.py (scipy 1.17.1 curve_fit, statsmodels 0.15.0).
+#[test]
+fn signatures_agree_with_scipy_and_statsmodels() {
+    let days = rows("signature_days.csv")
+        .iter()
+        .map(|row| Day {
+            date: row[0].parse().unwrap(),
+            mean_c: row[1].parse().unwrap(),
+        })
+        .collect();
+    let weather = DailyWeather::of_days(days);
+    let mut homes: BTreeMap<String, Vec<Interval>> = BTreeMap::new();
+    for row in rows("signature_intervals.csv") {
+        homes.entry(row[0].clone()).or_default().push(Interval {
+            from: row[1].parse().unwrap(),
+            to: row[2].parse().unwrap(),
+            kwh: row[3].parse().unwrap(),
+            line: 0,
+        });
+    }
+    let expected = rows("signature_fits.csv");
+    assert_eq!(expected.len(), 8);
+    let mut odd = 0;
+    for row in expected {
+        let number = |i: usize| row[i].parse::<f64>().unwrap();
+        let found = fit(&homes[&row[0]], &weather, &PLAIN).unwrap();
+        // Both searches end within about 1e-6 K of the optimum, where the sum of squares is flat.
+        let near = |a: f64, b: f64| {
+            assert!(
+                (a - b).abs() < 2e-5 * b.abs().max(1.0),
+                "home {}: {a} and {b}",
+                row[0]
+            )
+        };
+        near(found.base_load_kwh_per_day.value, number(1));
+        near(found.slope_kwh_per_k_day, number(2));
+        near(found.base_temperature_c.value, number(3));
+        // Limits are t times the standard error; t by an independent route, scipy.stats.t.ppf(0.975, freedom), for the first.
+        let freedom = (found.n() - 3) as f64;
+        let t = statrs::distribution::StudentsT::new(0.0, 1.0, freedom)
+            .unwrap()
+            .inverse_cdf(0.975);
+        // An optimum can lie at a day's own temperature, where a day more or less counts as colder: a part in a thousand.
+        let close =
+            |a: f64, b: f64| assert!((a / b - 1.0).abs() < 1e-3, "home {}: {a} and {b}", row[0]);
+        close(found.base_load_kwh_per_day.half() / t, number(4));
+        close(
+            found.heat_loss_w_per_k.half() / t * 24.0 / 1000.0,
+            number(5),
+        );
+        close(found.base_temperature_c.half() / t, number(6));
+        near(found.r_squared, number(7));
+        near(found.cv_rmse, number(8));
+        let at: usize = row[10].parse().unwrap();
+        close(found.points[at].off, number(9));
+        odd += found.points.iter().filter(|point| point.odd).count();
+    }
+    assert!(
+        odd >= 2,
+        "the readings made 60 % too large are not called odd: {odd}"
+    );
+}
+
+/// A stream of random numbers from a seed (SplitMix64, Steele, Lea and Flood 2014).
+struct Random(u64);
+
+impl Random {
+    fn unit(&mut self) -> f64 {
+        self.0 = self.0.wrapping_add(0x9e37_79b9_7f4a_7c15);
+        let mut z = self.0;
+        z = (z ^ (z >> 30)).wrapping_mul(0xbf58_476d_1ce4_e5b9);
+        z = (z ^ (z >> 27)).wrapping_mul(0x94d0_49bb_1331_11eb);
+        ((z ^ (z >> 31)) >> 11) as f64 / (1_u64 << 53) as f64
+    }
+
+    fn between(&mut self, low: f64, high: f64) -> f64 {
+        low + (high - low) * self.unit()
+    }
+
+    fn normal(&mut self, mean: f64, deviation: f64) -> f64 {
+        // Never 0 or 1, whose quantiles are infinite.
+        let unit = self.between(1e-12, 1.0 - 1e-12);
+        mean + deviation * Normal::new(0.0, 1.0).unwrap().inverse_cdf(unit)
+    }
+}
+
+/// A year of daily temperatures of its own for every home.
+fn weather(random: &mut Random) -> DailyWeather {
+    let first = NaiveDate::from_ymd_opt(2021, 9, 1).unwrap();
+    let mut spell = 0.0;
+    let days = (0..460)
+        .map(|i| {
+            let date = first + Days::new(i);
+            spell = 0.8 * spell + random.normal(0.0, 1.8);
+            let season = std::f64::consts::TAU * (i as f64 + 243.0 - 25.0) / 365.25;
+            Day {
+                date,
+                mean_c: 10.3 - 6.8 * season.cos() + spell,
+            }
+        })
+        .collect();
+    DailyWeather::of_days(days)
+}
+
+/// A home of known truth and what would be stated about it.
+fn home(random: &mut Random) -> (f64, Signature) {
+    const DEVIATIONS_95: f64 = 1.959_964;
+    let stated = Stated {
+        efficiency: 0.82,
+        efficiency_within: 0.05,
+        hot_water_share: 0.85,
+        hot_water_share_within: 0.15,
+        hot_water_swing: 0.17,
+    };
+    let truth = random.between(80.0, 350.0);
+    let base_c = random.normal(15.2, 1.3).clamp(12.0, 18.5);
+    let efficiency = random.normal(stated.efficiency, stated.efficiency_within / DEVIATIONS_95);
+    let share = random
+        .normal(
+            stated.hot_water_share,
+            stated.hot_water_share_within / DEVIATIONS_95,
+        )
+        .clamp(0.0, 1.0);
+    let base_load = random.between(6.0, 18.0);
+    let noise = random.between(4.0, 16.0);
+    let slope = truth * 24.0 / 1000.0 / efficiency;
+    let weather = weather(random);
+    let mut from = weather.all()[0].date + Days::new((random.unit() * 60.0) as u64);
+    let mut intervals = Vec::new();
+    for line in 0..13 {
+        let to = from + Days::new(25 + (random.unit() * 11.0) as u64);
+        let Some(days) = weather.between(from, to) else {
+            break;
+        };
+        let kwh = days
+            .iter()
+            .map(|day| {
+                let water = base_load * (1.0 + share * stated.hot_water_swing * day.water_season());
+                water + slope * (base_c - day.mean_c).max(0.0) + random.normal(0.0, noise)
+            })
+            .sum();
+        intervals.push(Interval {
+            from,
+            to,
+            kwh,
+            line,
+        });
+        from = to;
+    }
+    (truth, fit(&intervals, &weather, &stated).unwrap())
+}
+
+/// Over 500 homes the 95 % limits hold the truth 92 to 98 % of the time: three standard deviations of such a count are 2.9 %.
+#[test]
+fn limits_hold_the_truth_as_often_as_they_say() {
+    let mut random = Random(20_230_101);
+    let homes: Vec<_> = (0..500).map(|_| home(&mut random)).collect();
+    let held = homes
+        .iter()
+        .filter(|(truth, found)| {
+            (found.heat_loss_w_per_k.low..=found.heat_loss_w_per_k.high).contains(truth)
+        })
+        .count();
+    let share = held as f64 / homes.len() as f64;
+    println!("coverage {share:.3}");
+    assert!((0.92..=0.98).contains(&share), "{share}");
+    // Without what is stated about efficiency the limits would claim too much.
+    let narrow = homes
+        .iter()
+        .filter(|(truth, found)| {
+            let loss = found.heat_loss_w_per_k;
+            let efficiency = loss.value * 0.05 / 0.82;
+            let half = (loss.half().powi(2) - efficiency * efficiency).sqrt();
+            (truth - loss.value).abs() <= half
+        })
+        .count();
+    println!(
+        "coverage without efficiency {:.3}",
+        narrow as f64 / homes.len() as f64
+    );
+    assert!(narrow < held);
+    let bias = homes
+        .iter()
+        .map(|(truth, found)| found.heat_loss_w_per_k.value / truth - 1.0)
+        .sum::<f64>()
+        / 500.0;
+    assert!(bias.abs() < 0.01, "{bias}");
+}
+
+fn winterledger(arguments: &[&str]) -> std::process::Output {
+    Command::cargo_bin("winterledger")
+        .unwrap()
+        .current_dir(root())
+        .args(arguments)
+        .output()
+        .unwrap()
+}
+
+/// The shipped readings were made by tests/reference/meter_readings.py: 196 W/K below 16.3 °C, 5.8 kWh a day without heating.
+#[test]
+fn the_command_finds_the_home_that_made_the_readings() {
+    let folder = tempfile::tempdir().unwrap();
+    let chart = folder.path().join("signature.png");
+    let output = winterledger(&[
+        "bills",
+        "briefs/meter-readings.csv",
+        "briefs/rooms.toml",
+        "--format",
+        "json",
+        "--chart",
+        chart.to_str().unwrap(),
+    ]);
+    assert!(
+        output.status.success(),
+        "{}",
+        String::from_utf8_lossy(&output.stderr)
+    );
+    let answer: serde_json::Value = serde_json::from_slice(&output.stdout).unwrap();
+    let number = |field: &str| answer[field].as_f64().unwrap();
+    let inside = |field: &str, truth: f64| {
+        let limits = answer[field].as_array().unwrap();
+        assert!(
+            (limits[0].as_f64().unwrap()..=limits[1].as_f64().unwrap()).contains(&truth),
+            "{field} {limits:?}"
+        );
+    };
+    inside("heat_loss_95", 196.0);
+    inside("base_temperature_95", 16.3);
+    inside("base_load_95", 5.8);
+    assert!((number("heat_loss_w_per_k") / 196.0 - 1.0).abs() < 0.1);
+    assert!(number("r_squared") > 0.98 && number("cv_rmse") < 0.15);
+    assert_eq!(
+        number("n"),
+        11.0,
+        "the estimated reading is joined to the next"
+    );
+    assert!(fs::read(chart).unwrap().starts_with(b"\x89PNG"));
+    let told = String::from_utf8(output.stderr).unwrap();
+    assert!(
+        told.contains("the reading of 2023-08-01 is an estimate"),
+        "{told}"
+    );
+    // methods §14: 6935 homes, median 198 W/K, standard deviation 119; balance temperature 15.2 °C, sd 2.3 (doi 10.5334/bc.670).
+    assert!((number("heat_loss_w_per_k") - 198.0).abs() < 2.0 * 119.0);
+    assert!((number("base_temperature_c") - 15.2).abs() < 2.0 * 2.3);
+}
+
+/// Every file under `tests/data/bills_bad/` is refused with exactly the message beside it.
+#[test]
+fn every_bad_file_of_readings_is_refused_with_its_message() {
+    let folder = root().join("tests/data/bills_bad");
+    let mut wrong = String::new();
+    let mut seen = 0;
+    for entry in fs::read_dir(&folder).unwrap() {
+        let path = entry.unwrap().path();
+        if path.extension().is_none_or(|extension| extension != "csv") {
+            continue;
+        }
+        seen += 1;
+        let name = path.file_name().unwrap().to_str().unwrap();
+        let output = winterledger(&[
+            "bills",
+            &format!("tests/data/bills_bad/{name}"),
+            "briefs/terrace.toml",
+        ]);
+        assert!(
+            output.stdout.is_empty(),
+            "{name}: something was printed as a result"
+        );
+        assert_eq!(output.status.code(), Some(1), "{name}");
+        let message = String::from_utf8(output.stderr).unwrap();
+        let expected = fs::read_to_string(path.with_extension("txt")).unwrap_or_default();
+        if message.trim_end() != expected.trim_end() {
+            wrong.push_str(&format!("=== {name}\n{message}\n"));
+        }
+    }
+    assert!(seen >= 12, "{seen} files");
+    assert!(wrong.is_empty(), "{wrong}");
+}
