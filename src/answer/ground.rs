@@ -163,9 +163,7 @@ pub fn ground_answer(
     life: &[LoopYear],
     shortest: Option<Result<ShortestLoop, NoShortest>>,
 ) -> Option<GroundAnswer> {
-    let Some(machine) = contender.system.heating.machine() else {
-        return None;
-    };
+    let machine = contender.system.heating.machine()?;
     let (kind, column) = match &machine.source {
         Source::OutdoorAir => return None,
         Source::Ground(ground) => ("quick loop", &ground.undisturbed_c[..]),

@@ -62,7 +62,7 @@ pub(super) fn kept(
     );
     let below = check.within(&table.below, &bounds::CHANGE_OVER_C);
     let rule = rule.and_then(|(rule,)| {
-        if let (RuleWord::ByCost | RuleWord::ByCarbon, Some(leaf)) = (rule, &table.below) {
+        if let (RuleWord::Cost | RuleWord::Carbon, Some(leaf)) = (rule, &table.below) {
             check.refuse(
                 &leaf.span(),
                 "below beside another rule than \"by-outdoor\"",
@@ -72,9 +72,9 @@ pub(super) fn kept(
             return None;
         }
         match rule {
-            RuleWord::ByCost => Some(HybridRule::ByCost),
-            RuleWord::ByCarbon => Some(HybridRule::ByCarbon),
-            RuleWord::ByOutdoor => {
+            RuleWord::Cost => Some(HybridRule::ByCost),
+            RuleWord::Carbon => Some(HybridRule::ByCarbon),
+            RuleWord::Outdoor => {
                 if table.below.is_none() {
                     check.missing(
                         &table.span(),

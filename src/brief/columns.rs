@@ -124,17 +124,17 @@ impl Word for BoilerFuel {
 /// A hybrid's rule, as a word.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(super) enum RuleWord {
-    ByOutdoor,
-    ByCost,
-    ByCarbon,
+    Outdoor,
+    Cost,
+    Carbon,
 }
 
 impl Word for RuleWord {
     const NAME: &'static str = "a rule by which boiler and machine share the hours";
     const WORDS: &'static [(&'static str, Self)] = &[
-        ("by-outdoor", Self::ByOutdoor),
-        ("by-cost", Self::ByCost),
-        ("by-carbon", Self::ByCarbon),
+        ("by-outdoor", Self::Outdoor),
+        ("by-cost", Self::Cost),
+        ("by-carbon", Self::Carbon),
     ];
 }
 

@@ -248,13 +248,12 @@ fn life_picture(path: &Path, contender: &Contender, life: &[LoopYear]) -> Result
 
 /// The lowest source temperature that the machine accepts.
 fn limit(contender: &Contender) -> Option<(String, f64)> {
-    match contender.system.heating.machine() {
-        Some(machine) => Some((
+    contender.system.heating.machine().map(|machine| {
+        (
             "lowest the machine accepts".to_owned(),
             machine.machine.limits().lowest_source_c,
-        )),
-        _ => None,
-    }
+        )
+    })
 }
 
 /// A picture as a file, SVG or PNG by its ending.

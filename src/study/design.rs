@@ -56,7 +56,7 @@ pub fn design_point(
     let of_machine = |machine: &MachineSystem| {
         let cold = cold_side(machine, outdoor_c, &ground);
         let highest_c = machine.machine.limits().highest_flow_at(cold.open_c);
-        let output_kw = if heater_flow_c <= highest_c {
+        if heater_flow_c <= highest_c {
             machine.machine.greatest_output_kw(&cold, heater_flow_c)
         } else {
             let carried_kw = emitters.output_kw(highest_c - emitters.header_k(), indoor_c);
@@ -64,8 +64,7 @@ pub fn design_point(
                 .machine
                 .greatest_output_kw(&cold, highest_c)
                 .min(carried_kw)
-        };
-        output_kw
+        }
     };
     let (output_kw, backup_kw) = match &system.heating {
         Heating::HeatPump(machine) => (of_machine(machine), Some(machine.backup_kw)),

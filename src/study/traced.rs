@@ -74,7 +74,7 @@ pub fn trace(case: &Case, contender: &Contender, wanted: Wanted) -> Result<Trace
         ..State::at_rest(system, contender.indoor_c)
     };
     run(site, system, plan, 0..hour, &mut state, &mut None::<Ledger>);
-    let before = state.clone();
+    let before = state;
     let mut watch = Watch::default();
     let row = step(hour, site, system, plan, &mut state, &mut watch);
     let mut duties = Vec::with_capacity(watch.0.len());
