@@ -56,7 +56,7 @@ fn four_bores() -> LoopDesign {
             coldest_hour: 600.0,
         },
         gradient_k_per_m: 0.03,
-        brine: Brine::new(Antifreeze::EthyleneGlycol, 0.3).unwrap_or_else(|| unreachable_brine()),
+        brine: Brine::new(Antifreeze::EthyleneGlycol, 0.3).unwrap_or_else(unreachable_brine),
         flow_kg_per_s: 1.6,
         pump: Pump::Efficiency(0.3),
         recharge_kwh: 0.0,
@@ -65,7 +65,7 @@ fn four_bores() -> LoopDesign {
 
 /// Water always is a brine.
 fn unreachable_brine() -> Brine {
-    Brine::new(Antifreeze::Water, 0.0).unwrap_or_else(|| unreachable_brine())
+    Brine::new(Antifreeze::Water, 0.0).unwrap_or_else(unreachable_brine)
 }
 
 /// An invented draw of four bores, kW.

@@ -3,7 +3,7 @@
 use std::fmt::Write;
 use std::hint::black_box;
 
-use winterledger::weather::{ReadOptions, describe, read_bytes};
+use winterledger::weather::{ReadOptions, describe, read, read_bytes};
 
 fn main() {
     divan::main();
@@ -64,6 +64,31 @@ fn read_and_describe_thirty_years(bencher: divan::Bencher) {
     };
     bencher.bench_local(|| {
         let weather = read_bytes("thirty years", black_box(text.as_bytes()), &options).ok();
+        black_box(weather.map(|weather| describe(std::slice::from_ref(&weather), &[15.5])))
+    });
+}
+
+/// From the disk to the description, as `benches/weather_side_by_side.py` times pandas; the file is its, where it names one.
+#[divan::bench(sample_count = 31)]
+fn read_and_describe_from_disk(bencher: divan::Bencher) {
+    let folder = tempfile::tempdir().ok();
+    let path = match (std::env::var_os("THIRTY_YEARS"), &folder) {
+        (Some(path), _) => std::path::PathBuf::from(path),
+        (None, Some(folder)) => {
+            let path = folder.path().join("thirty_years.csv");
+            if std::fs::write(&path, thirty_years()).is_err() {
+                return;
+            }
+            path
+        }
+        (None, None) => return,
+    };
+    let options = ReadOptions {
+        zone: "UTC".parse().ok(),
+        ..Default::default()
+    };
+    bencher.bench_local(|| {
+        let weather = read(black_box(&path), &options).ok();
         black_box(weather.map(|weather| describe(std::slice::from_ref(&weather), &[15.5])))
     });
 }

@@ -182,6 +182,18 @@ bounds! {
     LOOP_YEAR = "year of the loop's life", 1.0 ..= 60.0, "";
     /// Carbon factor of any fuel or electricity.
     CARBON_KG_PER_KWH = "carbon factor", 0.0 ..= 2.0, "kg CO2e/kWh";
+    /// Years over which systems are compared: up to twice the life of a borehole.
+    COMPARED_YEARS = "years compared", 1.0 ..= 100.0, "years";
+    /// Life of a part.
+    PART_LIFE_YEARS = "life of a part", 1.0 ..= 100.0, "years";
+    /// Years until a part must be replaced.
+    DUE_IN_YEARS = "years until replacement", 0.0 ..= 100.0, "years";
+    /// Real discount rate.
+    DISCOUNT_RATE = "discount rate, as a fraction,", -0.5 ..= 0.5, "";
+    /// Yearly change of a price or a carbon factor.
+    YEARLY_CHANGE = "yearly change, as a fraction,", -0.5 ..= 0.5, "";
+    /// A later price or carbon factor as a multiple of today's.
+    PATH_MULTIPLE = "multiple of today's", 0.0 ..= 100.0, "";
     /// Allowance from laboratory to home, as a multiplier of the laboratory figure.
     FIELD_FACTOR = "field factor", 0.5 ..= 1.0, "";
 }

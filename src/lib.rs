@@ -6,6 +6,7 @@
 pub mod air;
 pub mod bounds;
 pub mod calendar;
+pub mod locale;
 pub mod problem;
 pub mod units;
 // rank 1: outside data
@@ -24,16 +25,17 @@ pub mod tariff;
 pub mod year;
 // rank 4: what the hours add up to
 pub mod bill;
+pub mod lifetime;
 pub mod plan;
 pub mod signature;
 // rank 5: cases side by side
 pub mod study;
 // rank 6: the contract
 pub mod answer;
-// rank 7: how it is shown
+// rank 7: how it is drawn
 pub mod chart;
-pub mod report;
-// rank 8: what comes in
+// rank 8: what comes in, what goes out
 pub mod brief;
+pub mod report;
 // rank 9: commands
 pub mod cli;

@@ -1,4 +1,5 @@
 //! Moist air against psychrolib 2.5.0, on the grid that `tests/reference/air.py` makes.
+#![cfg(test)]
 
 use winterledger::air::{MoistAir, saturation_pressure_pa};
 

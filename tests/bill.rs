@@ -1,4 +1,5 @@
 //! Bills against published and independently computed ones.
+#![cfg(test)]
 
 use chrono::NaiveDate;
 use proptest::prelude::*;

@@ -1,4 +1,5 @@
 //! Ground against outside references. Values: `tests/reference/ground.py` (pygfunction 2.3.1, CoolProp 8.0.0, scipy 1.17.1).
+#![cfg(test)]
 
 use std::f64::consts::TAU;
 use std::path::Path;

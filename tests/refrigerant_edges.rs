@@ -1,5 +1,6 @@
 //! The exact equation at the edges of its range: near the critical point, in the cold, and for input that
 //! is no number. An error value is an answer; a panic or a number that is not finite is not.
+#![cfg(test)]
 
 use proptest::prelude::*;
 use std::sync::LazyLock;

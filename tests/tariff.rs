@@ -1,4 +1,5 @@
 //! The examples in `tariffs/` and the `tariff` command.
+#![cfg(test)]
 
 use std::fs;
 use std::path::{Path, PathBuf};

@@ -1,5 +1,6 @@
 //! Every file under `tests/data/tariff_bad/` is refused with exactly the message beside it: all problems at once, with
 //! file, line, what was found, what is allowed and what to write.
+#![cfg(test)]
 
 use std::fs;
 use std::path::Path;

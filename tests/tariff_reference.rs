@@ -1,4 +1,5 @@
 //! Currencies against OpenJDK's table of ISO 4217 (`tests/reference/tariff_currencies.java`); bands over both clock changes against `tests/reference/tariff_bands.py`, an independent computation with pandas.
+#![cfg(test)]
 
 use std::collections::BTreeMap;
 use std::path::Path;

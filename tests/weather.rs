@@ -1,4 +1,5 @@
 //! Weather read from the samples and from open files, against the figures of published methods.
+#![cfg(test)]
 
 use std::path::Path;
 use std::slice::from_ref;

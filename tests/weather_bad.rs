@@ -2,6 +2,7 @@
 //!
 //! The files are made by `tests/data/weather_bad/make.py`; the text expected of NAME stands in NAME.txt. With
 //! WRITE_EXPECTED=1 the test writes those texts anew, to be read by a person before they are kept.
+#![cfg(test)]
 
 use std::fmt::Write;
 use std::fs;

@@ -1,4 +1,5 @@
 //! The `weather` command as it is run: text, JSON, exit status, and what it writes.
+#![cfg(test)]
 
 use std::fmt::Write;
 use std::fs;

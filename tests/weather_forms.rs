@@ -1,4 +1,5 @@
 //! One stretch of weather in every form that files have: each must read as the same hours.
+#![cfg(test)]
 
 use std::fmt::Write as _;
 use std::io::Write as _;

@@ -1,4 +1,5 @@
 //! What must hold for any weather file: bytes in give an answer or an error, and what we write reads back the same.
+#![cfg(test)]
 
 use chrono::{TimeZone, Utc};
 use proptest::prelude::*;

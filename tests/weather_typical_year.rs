@@ -1,4 +1,5 @@
 //! The typical year against an independent choice by `tests/reference/typical_year.py`.
+#![cfg(test)]
 
 use std::fmt::Write;
 

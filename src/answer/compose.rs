@@ -5,18 +5,19 @@ use std::collections::BTreeMap;
 use super::account::{bill_answers, meter_answers, shifting_answer, signal_gap};
 use super::bills::pair;
 use super::estimate::{
-    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer,
-    WeatherUsed, YearAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, InputFile, MonthAnswer, SystemAnswer, WeatherUsed,
+    YearAnswer,
 };
 use super::home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomsAnswer, StoreAnswer,
 };
+use super::lever::lever_answer;
 use crate::home::Pattern;
 use crate::problem::{Finding, Problems, Severity};
 use crate::signature::{DailyWeather, Signature};
 use crate::source::Memory;
 use crate::study::{
-    BalancePoint, BreakEven, Case, Contender, DesignPoint, Lever, Outcome, balance_point,
+    BalancePoint, Case, Contender, DesignPoint, Lever, Measure, Outcome, Pair, balance_point,
     break_even, design_point, under_pattern,
 };
 use crate::units::Fuel;
@@ -37,6 +38,8 @@ pub struct Told {
     pub findings: Vec<Finding>,
     /// The machine of each contender, in their order.
     pub machines: Vec<Option<String>>,
+    /// The files that were read.
+    pub inputs: Vec<InputFile>,
     /// The room table's verdict for each contender, in their order.
     pub rooms: Vec<Option<RoomsAnswer>>,
     /// Transmission and ventilation of the home as it is, W/K, where they are known apart.
@@ -110,10 +113,10 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
                 Lever::FlowTemperature,
             ];
             let mut answers = Vec::new();
-            for lever in levers {
-                if let Some(found) = break_even(case, outcomes, i, lever)? {
-                    answers.push(lever_answer(&found, &system.label));
-                }
+            let pair = Pair::new(case, outcomes, i);
+            for (lever, pair) in levers.into_iter().zip(pair.iter().cycle()) {
+                let found = break_even(pair, lever, &[Measure::YearlyCost])?;
+                answers.extend(found.iter().map(|found| lever_answer(found, pair)));
             }
             break_evens.insert(system.label.clone(), answers);
         }
@@ -150,6 +153,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         carbon_scope: told.carbon_scope.clone(),
         assumptions: told.assumptions.clone(),
         findings,
+        inputs: told.inputs.clone(),
     })
 }
 
@@ -431,80 +435,6 @@ fn hygiene_cycles(case: &Case) -> Option<Finding> {
             "water above 50 °C scalds: mixing valves at the taps; how often and how hot is for local rules and a licensed installer to say",
         )
     })
-}
-
-fn lever_answer(found: &BreakEven, label: &str) -> LeverAnswer {
-    let bound = found.lever.bound();
-    let conditions: Vec<_> = found
-        .crossings
-        .iter()
-        .map(|crossing| condition(found, crossing.value))
-        .collect();
-    let sentence = match conditions.as_slice() {
-        [] => format!(
-            "No {} makes \"{label}\" cost what today's system costs.",
-            bound.words()
-        ),
-        _ => {
-            let sides = found
-                .crossings
-                .iter()
-                .zip(&conditions)
-                .map(|(crossing, condition)| {
-                    let side = if crossing.cheaper_above {
-                        "above"
-                    } else {
-                        "below"
-                    };
-                    format!("{condition}; {side} that it is the cheaper one")
-                });
-            let sides: Vec<_> = sides.collect();
-            format!(
-                "\"{label}\" breaks even with {}.",
-                sides.join(", and again with ")
-            )
-        }
-    };
-    LeverAnswer {
-        lever: bound.label.to_owned(),
-        unit: bound.unit.to_owned(),
-        now: found.now,
-        values: found
-            .crossings
-            .iter()
-            .map(|crossing| crossing.value)
-            .collect(),
-        between: [bound.low, bound.high],
-        conditions,
-        sentence,
-    }
-}
-
-/// A value of a lever as it is said aloud.
-fn condition(found: &BreakEven, value: f64) -> String {
-    let compared = |what: &str, more: &str, less: &str| {
-        let percent = (value - 1.0) * 100.0;
-        format!(
-            "{what} {:.0} % {}",
-            percent.abs(),
-            if percent >= 0.0 { more } else { less }
-        )
-    };
-    match found.lever {
-        Lever::ElectricityRate => compared("electricity", "dearer", "cheaper"),
-        Lever::FuelRate => compared("gas", "dearer", "cheaper"),
-        Lever::HeatLoss => compared("a heat loss", "larger", "smaller"),
-        Lever::FlowTemperature => {
-            format!("a design flow of {value:.0} °C (now {:.0} °C)", found.now)
-        }
-        Lever::FieldFactor => {
-            let percent = value * 100.0;
-            format!(
-                "{percent:.0} % of laboratory performance (now {:.0} %)",
-                found.now * 100.0
-            )
-        }
-    }
 }
 
 fn design_answer(design: &DesignPoint) -> DesignAnswer {

@@ -31,6 +31,19 @@ pub struct Estimate {
     pub assumptions: Vec<Assumption>,
     /// What was odd and what was done about it.
     pub findings: Vec<Finding>,
+    /// The files it was made from.
+    pub inputs: Vec<InputFile>,
+}
+
+/// A file that was read.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
+pub struct InputFile {
+    /// Its name.
+    pub file: String,
+    /// Its length.
+    pub bytes: usize,
+    /// Its SHA-256 checksum (FIPS 180-4), hexadecimal.
+    pub sha256: String,
 }
 
 /// The weather an estimate was run on.
@@ -266,6 +279,8 @@ pub struct LeverAnswer {
     pub lever: String,
     /// Its unit.
     pub unit: String,
+    /// What the choice and today's system are compared by.
+    pub measure: String,
     /// Where it stands.
     pub now: f64,
     /// Values at which the choice costs what today's system costs; empty when there is none in the range.
@@ -274,6 +289,11 @@ pub struct LeverAnswer {
     pub between: [f64; 2],
     /// Each value in words: "electricity 4 % cheaper".
     pub conditions: Vec<String>,
+    /// What holds beside each value: "cheaper below that".
+    pub sides: Vec<String>,
+    /// How it stays over the whole range where there is no such value: "dearer"; absent where there is one.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub stays: Option<String>,
     /// The same as a sentence.
     pub sentence: String,
 }

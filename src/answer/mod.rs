@@ -8,18 +8,23 @@ mod estimate;
 pub mod explain;
 pub mod ground;
 mod home;
+mod lever;
+pub mod lifetime;
 pub mod machine;
+pub mod odds;
 pub mod rating;
+pub mod study;
 pub mod tariff;
 pub mod weather;
 
 pub use account::{BillAnswer, MeterAnswer, MeterMonthAnswer, RunAnswer, ShiftingAnswer};
 pub use compose::{BillsTold, Told, compare_patterns, compose};
 pub use estimate::{
-    Assumption, Estimate, GroundShown, HomeUsed, LeverAnswer, MonthAnswer, SystemAnswer,
+    Assumption, Estimate, GroundShown, HomeUsed, InputFile, LeverAnswer, MonthAnswer, SystemAnswer,
     WeatherUsed, YearAnswer,
 };
 pub use home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomAnswer, RoomsAnswer,
     StoreAnswer,
 };
+pub use lever::short;

@@ -340,7 +340,7 @@ pub(super) fn of_file(
     brief: &Path,
 ) -> Result<(BillsMade, Vec<crate::answer::Assumption>), Problems> {
     let text = read_text(brief)?;
-    let folder = Folder::Disk(brief.parent().map(Path::to_owned).unwrap_or_default());
+    let folder = Folder::disk(brief.parent().map(Path::to_owned).unwrap_or_default());
     let (raw, mut check) = Document::<raw::Brief>::read(&brief.display().to_string(), &text)?;
     let mut notes = Notes::default();
     let zone = super::read::time_zone(raw.home.as_ref(), &mut check, &mut notes);

@@ -92,5 +92,19 @@ defaults! {
     LEAKAGE = "choice.leakage", "1 %", "of the charge a year: common practice, no source";
     LEAKAGE_AT_END = "choice.leakage_at_end", "10 %", "of the charge: common practice, no source";
     LEAKAGE_LIFE = "years over which the leakage at the end is spread", "15 years", "common practice, no source";
+    COMPARED_YEARS = "lifetime.years", "20 years", "common practice, no source";
+    DISCOUNT_RATE = "lifetime.discount_rate", "3.5 %",
+        "real social rate of the UK Treasury's Green Book (from memory)";
+    ELECTRICITY_CHANGE = "lifetime.electricity_change", "0 %", "no forecast: prices stay as they are above inflation";
+    GAS_CHANGE = "lifetime.gas_change", "0 %", "no forecast: prices stay as they are above inflation";
+    ELECTRICITY_CARBON_CHANGE = "lifetime.electricity_carbon_change", "0 %",
+        "no forecast: carbon stays as it is";
+    MACHINE_LIFE = "choice.outlay.life", "20 years", "common practice, no source";
+    BOILER_LIFE = "outlay.life of a boiler", "15 years", "common practice, no source";
+    LOOP_LIFE = "outlay.lives of a loop, bores or trenches", "50 years", "common practice, no source";
+    EMITTERS_LIFE = "outlay.lives of radiators, emitters or floors", "30 years", "common practice, no source";
+    STORE_LIFE = "outlay.lives of a store or cylinder", "25 years", "common practice, no source";
+    INSTALLATION_LIFE = "outlay.lives of installation or work", "50 years", "it is done once: common practice, no source";
+    DUE_IN = "today.outlay.due_in", "8 years", "about half a boiler's life: common practice, no source";
     BACKUP_BAND = "backup starts below the set point by", "0.5 K", "common practice, no source";
 }

@@ -2,18 +2,17 @@
 
 use std::ops::Range;
 
+use super::by_rooms::{by_rooms, to_reach};
 use super::defaults;
+use super::emitter_findings::{floor_surface, pipe, short_of_load};
 use super::envelope::Envelope;
 use super::notes::Notes;
 use super::raw::{EmitterTable, GroupTable};
-use crate::answer::{RoomAnswer, RoomsAnswer};
+use crate::answer::RoomsAnswer;
 use crate::bounds;
 use crate::document::{Check, Leaf, Section};
-use crate::home::{
-    Control, EmitterKind, Emitters, Group, MOST_GROUPS, OCCUPIED_FLOOR_C, Room, floor_surface_c,
-    smallest_pipe_mm, water_flow_l_per_min, worst_room,
-};
-use crate::problem::{Finding, Severity};
+use crate::home::{Control, Emitters, Group, MOST_GROUPS, Room, worst_room};
+use crate::problem::Finding;
 use crate::units::{Area, TemperatureDifference, parse};
 
 /// What emitters are made from.
@@ -264,7 +263,7 @@ impl Water<'_> {
     }
 }
 
-fn greatest_flow_c(
+pub(super) fn greatest_flow_c(
     table: &EmitterTable,
     flow_c: f64,
     check: &mut Check,
@@ -291,7 +290,11 @@ fn greatest_flow_c(
 }
 
 /// Emitters under the control and behind the header of a table.
-fn controlled(emitters: Emitters, table: &EmitterTable, check: &mut Check) -> Option<Emitters> {
+pub(super) fn controlled(
+    emitters: Emitters,
+    table: &EmitterTable,
+    check: &mut Check,
+) -> Option<Emitters> {
     let header = check.within(&table.header, &bounds::HEADER_K);
     let fixed = check.within(&table.fixed_flow, &bounds::FLOW_C);
     let line = check.value(&table.line);
@@ -331,184 +334,4 @@ fn controlled(emitters: Emitters, table: &EmitterTable, check: &mut Check) -> Op
         None => 0.0,
     };
     Some(emitters.with_control(control).with_header(header_k))
-}
-
-/// The worst room sets the flow of all.
-fn by_rooms(
-    table: Option<&Section<EmitterTable>>,
-    rooms: &[Room],
-    own: &Envelope,
-    check: &mut Check,
-    notes: &mut Notes,
-) -> Option<EmittersMade> {
-    let none = None;
-    let spread_leaf = table.map_or(&none, |table| &table.spread);
-    let spread_k = notes
-        .quantity(
-            check,
-            spread_leaf,
-            &bounds::SPREAD_K,
-            &defaults::ROOM_SPREAD,
-        )?
-        .k();
-    let worst = worst_room(rooms, spread_k)?;
-    let room = &rooms[worst.place];
-    let flow_c = worst.flow_c;
-    if !bounds::FLOW_C.holds(flow_c) {
-        let span = table.map_or(0..0, Section::span);
-        check.refuse(
-            &span,
-            format!("room \"{}\" needs a flow of {flow_c:.0} °C for its {:.2} kW from radiators of {:.2} kW", room.name, room.load_kw, room.radiator_kw),
-            bounds::FLOW_C.words(),
-            "check its heat loss and its radiators, whose output is meant at ΔT 50 K",
-        );
-        return None;
-    }
-    let greatest_flow_c = match table {
-        Some(table) => greatest_flow_c(table, flow_c, check, notes)?,
-        None => {
-            flow_c
-                + parse::<TemperatureDifference>(defaults::GREATEST_FLOW_ABOVE_DESIGN.value)
-                    .ok()?
-                    .k()
-        }
-    };
-    let return_c = (flow_c - spread_k).max(own.indoor_c + 1.0);
-    let emitters = Emitters::new(
-        EmitterKind::Radiators,
-        own.design_load_kw(),
-        flow_c,
-        return_c,
-        own.indoor_c,
-        greatest_flow_c,
-    );
-    let emitters = match table {
-        Some(table) => controlled(emitters, table, check)?,
-        None => emitters,
-    };
-    let mut answer = RoomsAnswer {
-        flow_c,
-        worst_room: Some(room.name.clone()),
-        remedy_kw: worst.remedy_kw,
-        next_room: worst.next.map(|(place, _)| rooms[place].name.clone()),
-        next_flow_c: worst.next.map(|(_, flow_c)| flow_c),
-        rooms: rooms.iter().map(|room| answer(room, spread_k)).collect(),
-        sentence: String::new(),
-    };
-    answer.sentence = answer.words();
-    let findings = pipe(&emitters).into_iter().collect();
-    Some(EmittersMade {
-        emitters,
-        rooms: Some(answer),
-        findings,
-    })
-}
-
-fn answer(room: &Room, spread_k: f64) -> RoomAnswer {
-    RoomAnswer {
-        name: room.name.clone(),
-        temperature_c: room.room_c,
-        heat_load_kw: room.load_kw,
-        radiator_kw: room.radiator_kw,
-        flow_c: room.flow_needed_c(spread_k),
-        needed_kw: None,
-    }
-}
-
-/// Which radiators have to grow so that a flow is enough in every room.
-fn to_reach(rooms: &[Room], flow_c: f64, spread_k: f64) -> RoomsAnswer {
-    let each = rooms.iter().map(|room| {
-        let needed_kw = room.radiator_needed_kw(flow_c, spread_k);
-        RoomAnswer {
-            needed_kw: needed_kw.filter(|&kw| kw > room.radiator_kw),
-            ..answer(room, spread_k)
-        }
-    });
-    let mut answer = RoomsAnswer {
-        flow_c,
-        worst_room: None,
-        remedy_kw: None,
-        next_room: None,
-        next_flow_c: None,
-        rooms: each.collect(),
-        sentence: String::new(),
-    };
-    answer.sentence = answer.words();
-    answer
-}
-
-/// A floor that would become too warm to stand on.
-fn floor_surface(
-    groups: &[Group],
-    table: &EmitterTable,
-    floor_area: &Option<Leaf<Area>>,
-    envelope: &Envelope,
-    check: &mut Check,
-) -> Option<Finding> {
-    let share: f64 = groups
-        .iter()
-        .filter(|group| group.kind == EmitterKind::Underfloor)
-        .map(|group| group.share)
-        .sum();
-    if share <= 0.0 {
-        return None;
-    }
-    let leaf = if table.floor.is_some() {
-        &table.floor
-    } else {
-        floor_area
-    };
-    let area_m2 = check.within(leaf, &bounds::FLOOR_AREA_M2)?.m2();
-    let output = share * envelope.design_load_kw() * 1000.0 / area_m2;
-    let surface_c = floor_surface_c(output, envelope.indoor_c);
-    (surface_c > OCCUPIED_FLOOR_C).then(|| {
-        Finding::new(
-            Severity::Warning,
-            format!(
-                "the heated floor of {area_m2:.0} m² would have to give {output:.0} W/m² at the design point, with a surface of \
-                 {surface_c:.1} °C"
-            ),
-            format!(
-                "EN 1264 allows {OCCUPIED_FLOOR_C:.0} °C where people stay: add radiators or wall heating, or lower the heat loss"
-            ),
-        )
-    })
-}
-
-/// Emitters of another load than the home's: told, since they set the flow.
-fn short_of_load(emitters: &Emitters, own: &Envelope) -> Option<Finding> {
-    let (can_kw, load_kw) = (emitters.greatest_output_kw(), own.design_load_kw());
-    (can_kw < load_kw * 0.999).then(|| {
-        Finding::new(
-            Severity::Caution,
-            format!(
-                "the emitters give {can_kw:.1} kW at their greatest permitted flow of {:.0} °C, {:.1} kW less than the design \
-                 heat load",
-                emitters.greatest_flow_c(),
-                load_kw - can_kw
-            ),
-            "rooms stay cold on the coldest days: larger emitters, a higher greatest_flow or less heat loss is needed",
-        )
-    })
-}
-
-/// The water flow a design asks for, and the smallest pipe that carries it.
-fn pipe(emitters: &Emitters) -> Option<Finding> {
-    /// Pipes up to this are what most homes have behind a boiler, mm. Common practice, no source.
-    const USUAL_MM: f64 = 22.0;
-    let spread_k = emitters.design_spread_k();
-    let flow = water_flow_l_per_min(emitters.design_load_kw(), spread_k);
-    let needs = match smallest_pipe_mm(flow) {
-        Some((outside_mm, _)) if outside_mm <= USUAL_MM => return None,
-        Some((outside_mm, _)) => format!("a main pipe of {outside_mm:.0} mm copper"),
-        None => "pipes larger than 35 mm copper".to_owned(),
-    };
-    Some(Finding::new(
-        Severity::Caution,
-        format!(
-            "the emitters need {flow:.1} L of water a minute for {:.1} kW at a spread of {spread_k:.0} K: {needs} to stay quiet",
-            emitters.design_load_kw()
-        ),
-        "smaller pipes starve the machine of water; have the pipes checked, or choose a larger spread",
-    ))
 }

@@ -1,15 +1,25 @@
 //! Where the files that a brief names come from: the folder of the brief, or the binary itself.
 
 use std::borrow::Cow;
+use std::cell::RefCell;
 use std::fs;
 use std::path::{Component, Path, PathBuf};
 
+use sha2::{Digest as _, Sha256};
+
 use super::demo;
+use crate::answer::InputFile;
 use crate::problem::{Place, Problem, Problems};
 
-/// Where named files come from.
-#[derive(Debug, Clone, PartialEq, Eq)]
-pub(super) enum Folder {
+/// Where named files come from, and which of them were read.
+#[derive(Debug)]
+pub(super) struct Folder {
+    root: Root,
+    read: RefCell<Vec<InputFile>>,
+}
+
+#[derive(Debug)]
+enum Root {
     /// A folder of the disk.
     Disk(PathBuf),
     /// The demonstration files in the binary, by their path from the top of the repository.
@@ -20,11 +30,49 @@ pub(super) enum Folder {
 const LARGEST: u64 = 512 * 1024 * 1024;
 
 impl Folder {
+    /// A folder of the disk.
+    pub fn disk(path: PathBuf) -> Self {
+        Self::of(Root::Disk(path))
+    }
+
+    /// A folder of the demonstration files.
+    pub fn embedded(path: &'static str) -> Self {
+        Self::of(Root::Embedded(path))
+    }
+
+    fn of(root: Root) -> Self {
+        Self {
+            root,
+            read: RefCell::default(),
+        }
+    }
+
+    /// Keeps the checksum of a file that was read; each once.
+    pub fn note(&self, file: String, content: &[u8]) {
+        let mut read = self.read.borrow_mut();
+        if !read.iter().any(|input| input.file == file) {
+            let sha256 = Sha256::digest(content)
+                .iter()
+                .map(|byte| format!("{byte:02x}"))
+                .collect();
+            read.push(InputFile {
+                file,
+                bytes: content.len(),
+                sha256,
+            });
+        }
+    }
+
+    /// The files that were read, in the order they were.
+    pub fn inputs(&self) -> Vec<InputFile> {
+        self.read.borrow().clone()
+    }
+
     /// The name under which messages speak of a file.
     pub fn name(&self, path: &str) -> String {
-        match self {
-            Self::Disk(folder) => folder.join(path).display().to_string(),
-            Self::Embedded(folder) => plain(&Path::new(folder).join(path)),
+        match &self.root {
+            Root::Disk(folder) => folder.join(path).display().to_string(),
+            Root::Embedded(folder) => plain(&Path::new(folder).join(path)),
         }
     }
 
@@ -37,11 +85,11 @@ impl Folder {
         let refuse = |found: String, remedy: &str| -> Problems {
             Problem::new(Place::file(name.as_str()), found, "a readable file", remedy).into()
         };
-        match self {
-            Self::Embedded(_) => demo::file(&name)
+        let content = match &self.root {
+            Root::Embedded(_) => demo::file(&name)
                 .map(Cow::Borrowed)
-                .ok_or_else(|| refuse("is not among the demonstration files".to_owned(), "")),
-            Self::Disk(folder) => {
+                .ok_or_else(|| refuse("is not among the demonstration files".to_owned(), ""))?,
+            Root::Disk(folder) => {
                 let path = folder.join(path);
                 let remedy = "paths in a brief are relative to the brief";
                 let facts = fs::metadata(&path)
@@ -57,9 +105,11 @@ impl Folder {
                 }
                 fs::read(&path)
                     .map(Cow::Owned)
-                    .map_err(|error| refuse(format!("cannot be read: {error}"), remedy))
+                    .map_err(|error| refuse(format!("cannot be read: {error}"), remedy))?
             }
-        }
+        };
+        self.note(name, &content);
+        Ok(content)
     }
 
     /// The content of a text file.
@@ -101,7 +151,7 @@ mod tests {
 
     #[test]
     fn a_missing_file_is_named_with_the_folder_of_the_brief() {
-        let problems = Folder::Disk("no/such".into())
+        let problems = Folder::disk("no/such".into())
             .text("tariff.toml")
             .unwrap_err();
         assert!(
@@ -113,9 +163,25 @@ mod tests {
     #[test]
     fn embedded_paths_are_made_plain() {
         assert_eq!(
-            Folder::Embedded("briefs").name("../tariffs/a.toml"),
+            Folder::embedded("briefs").name("../tariffs/a.toml"),
             "tariffs/a.toml"
         );
-        assert!(Folder::Embedded("briefs").text("../nothing.toml").is_err());
+        assert!(Folder::embedded("briefs").text("../nothing.toml").is_err());
+    }
+
+    /// FIPS 180-4 publishes this checksum of "abc" as an example.
+    #[test]
+    fn each_file_is_noted_once_with_its_checksum() {
+        let folder = Folder::embedded("briefs");
+        folder.note("a".to_owned(), b"abc");
+        folder.note("a".to_owned(), b"abc");
+        folder.bytes("terrace.toml").unwrap();
+        let inputs = folder.inputs();
+        assert_eq!(inputs.len(), 2);
+        assert_eq!(
+            inputs[0].sha256,
+            "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad"
+        );
+        assert_eq!(inputs[1].file, "briefs/terrace.toml");
     }
 }

@@ -2,10 +2,13 @@
 
 mod bills;
 mod boiler;
+mod by_rooms;
 mod carbon;
+mod clock_leaves;
 mod columns;
 mod defaults;
 mod demo;
+mod emitter_findings;
 mod emitters;
 mod energy;
 mod envelope;
@@ -16,6 +19,8 @@ mod home;
 mod hot_water;
 mod household;
 mod leaves;
+mod lifetime;
+mod locale;
 mod machine;
 mod notes;
 mod pattern;

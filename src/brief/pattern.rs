@@ -1,7 +1,8 @@
 //! From a pattern table to the set points of a week and a year.
 
+use super::clock_leaves::Spells;
 use super::defaults;
-use super::leaves::{SetBack, Spells};
+use super::leaves::SetBack;
 use super::notes::Notes;
 use super::raw::PatternTable;
 use crate::bounds;

@@ -3,17 +3,17 @@
 use schemars::JsonSchema;
 use serde::Deserialize;
 
+use super::clock_leaves::{ClockHour, DaySpans, Spells, WeekDay};
 use super::columns::{BoilerFuel, ByMonth, DayShape, RuleWord, Stamps};
 use super::ground::{
     BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
 };
-use super::leaves::{
-    Capital, ClockHour, ColdWater, DaySpans, HeatLossSource, HygieneBy, Line, SetBack, Spells,
-    WeekDay,
-};
+use super::leaves::{Capital, ColdWater, HeatLossSource, HygieneBy, Line, SetBack};
+use super::lifetime::{LifetimeTable, OutlayTable};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind, TappingProfile, WarmUp};
+use crate::locale::{DateOrder, Paper};
 use crate::plan::ShiftRule;
 use crate::units::{
     AirChangeRate, AirVolume, Area, CarbonFactor, Diffusivity, Duration, Energy, Fuel,
@@ -32,11 +32,42 @@ pub(super) struct Brief {
     pub energy: Option<Section<Energies>>,
     /// What the home uses and makes beside its heating.
     pub household: Option<Section<HouseholdTable>>,
+    /// How the years of a system's life are counted.
+    pub lifetime: Option<Section<LifetimeTable>>,
     /// What heats the home today.
     pub today: Option<Section<SystemTable>>,
+    /// How the report is written.
+    pub report: Option<Section<ReportTable>>,
     /// What could heat it instead, one table a choice.
     #[serde(default)]
     pub choice: Vec<Section<SystemTable>>,
+}
+
+/// How the report is written. The currency is that of the tariffs.
+#[derive(Debug, Deserialize, JsonSchema)]
+pub(super) struct ReportTable {
+    /// Mark between whole and fraction: "." or ",".
+    pub decimal: Option<Leaf<String>>,
+    /// Mark between thousands: ",", ".", "space" or "none".
+    pub thousands: Option<Leaf<String>>,
+    /// Order of a date: "day-first", "month-first" or "year-first".
+    pub dates: Option<Leaf<(DateOrder,)>>,
+    /// Paper it is printed on: "A4" or "letter".
+    pub paper: Option<Leaf<(Paper,)>>,
+}
+
+impl Word for DateOrder {
+    const NAME: &'static str = "an order of a date";
+    const WORDS: &'static [(&'static str, Self)] = &[
+        ("day-first", Self::DayFirst),
+        ("month-first", Self::MonthFirst),
+        ("year-first", Self::YearFirst),
+    ];
+}
+
+impl Word for Paper {
+    const NAME: &'static str = "a size of paper";
+    const WORDS: &'static [(&'static str, Self)] = &[("a4", Self::A4), ("letter", Self::Letter)];
 }
 
 /// The home.
@@ -459,6 +490,8 @@ pub(super) struct SystemTable {
     pub leakage_at_end: Option<Leaf<Share>>,
     /// What it costs to put in, in one amount or part by part.
     pub capital: Option<Leaf<Capital>>,
+    /// What it costs besides, and how long its parts last.
+    pub outlay: Option<Section<OutlayTable>>,
 
     /// Another heat-loss coefficient, when insulating is part of the choice; the emitters stay as they are.
     pub heat_loss: Option<Leaf<HeatLossCoefficient>>,

@@ -12,6 +12,8 @@ use super::bills::{BillsMade, Over, named, of_file};
 use super::energy::{Energy, energy};
 use super::files::Folder;
 use super::home::WeatherFacts;
+use super::lifetime::terms;
+use super::locale::locale;
 use super::notes::Notes;
 use super::raw;
 use super::system::{Surroundings, contender};
@@ -20,6 +22,7 @@ use super::{defaults, demo};
 use crate::answer::{Assumption, BillsTold, Told};
 use crate::calendar::CivilHour;
 use crate::document::{Check, Document, Section, read_text};
+use crate::locale::Locale;
 use crate::problem::Problems;
 use crate::signature::DailyWeather;
 use crate::source::{AnnualSwing, undisturbed_c};
@@ -35,6 +38,8 @@ pub struct Brief {
     pub case: Case,
     /// What the estimate tells beside the figures.
     pub told: Told,
+    /// How figures are written.
+    pub locale: Locale,
 }
 
 impl Brief {
@@ -45,7 +50,10 @@ impl Brief {
     pub fn read(path: &Path) -> Result<Self, Problems> {
         let text = read_text(path)?;
         let folder = path.parent().map(Path::to_owned).unwrap_or_default();
-        Self::parse(&path.display().to_string(), &text, &Folder::Disk(folder))
+        let folder = Folder::disk(folder);
+        let name = path.display().to_string();
+        folder.note(name.clone(), text.as_bytes());
+        Self::parse(&name, &text, &folder)
     }
 
     /// The demonstration brief that is built in.
@@ -53,7 +61,7 @@ impl Brief {
     /// # Errors
     /// As [`Brief::read`]; a test holds that there are none.
     pub fn demonstration() -> Result<Self, Problems> {
-        let folder = Folder::Embedded(demo::FOLDER);
+        let folder = Folder::embedded(demo::FOLDER);
         let text = folder.text(demo::BRIEF)?;
         Self::parse(&folder.name(demo::BRIEF), &text, &folder)
     }
@@ -102,6 +110,7 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         .map(|(weather, zone)| Arc::new(site(weather, zone)));
     let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
     labels_differ(raw, check);
+    let locale = locale(raw.report.as_ref(), check);
 
     // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
     let facts = weather.as_ref().map_or(
@@ -167,18 +176,18 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             }
         }
     }
+    let told = raw
+        .choice
+        .iter()
+        .any(|choice| choice.capital.is_some() || choice.outlay.is_some());
+    let terms = terms(raw.lifetime.as_ref(), told, check, &mut notes);
     let Energy {
         currency,
         carbon_scope,
         ..
     } = energy?;
-    let (weather, site, zone) = (weather?, site?, zone?);
-    let mut case = Case {
-        site,
-        time_zone: zone,
-        currency,
-        contenders,
-    };
+    let (weather, site, zone, locale) = (weather?, site?, zone?, locale?);
+    let mut case = Case::new(site, zone, currency, terms?, contenders);
     let bills = match bills {
         Some(bills) if check.problems().is_empty() => Some(scaled(bills, &mut case, check)?),
         _ => None,
@@ -193,10 +202,12 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             assumptions: notes.into_vec(),
             findings,
             machines,
+            inputs: folder.inputs(),
             rooms,
             parts_w_per_k,
             bills,
         },
+        locale,
     })
 }
 

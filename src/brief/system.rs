@@ -12,6 +12,7 @@ use super::files::Folder;
 use super::ground::{Ground, ground, whole_within};
 use super::home::{Warm, WeatherFacts, warm_side};
 use super::leaves::Capital;
+use super::lifetime::outlay;
 use super::machine::{MachineMade, machine};
 use super::notes::Notes;
 use super::raw::{Home, SystemKind, SystemTable};
@@ -82,6 +83,15 @@ pub(super) fn contender(
         notes,
     );
     let capital = capital(table, around.energy, check);
+    let currency = around.energy.map(|energy| energy.currency);
+    let outlay = outlay(
+        table,
+        capital.as_ref(),
+        (kind, around.today),
+        currency,
+        check,
+        notes,
+    );
     let shown_year = shown_year(table, check);
     let kind = kind?;
     only_its_own_fields(table, kind, check);
@@ -175,12 +185,12 @@ pub(super) fn contender(
             kind: kind.word(),
             today: around.today,
             system,
-            plan,
+            plan: Arc::new(plan),
             electricity: supplies.electricity.account,
             fuel: supplies.fuel.map(|supply| supply.account),
             beside: supplies.beside,
             household: Arc::clone(&energy.household),
-            unshifted,
+            unshifted: unshifted.map(Arc::new),
             shift_rule,
             leakage,
             indoor_c: warm.indoor_c,
@@ -190,6 +200,7 @@ pub(super) fn contender(
             ability,
             capital: capital.whole,
             capital_parts: capital.parts,
+            outlay: outlay?,
             shown_year: shown_year?,
             aged: None,
         },
@@ -324,11 +335,11 @@ fn leakage(
 
 /// What a system costs to put in.
 #[derive(Debug, Default)]
-struct PutIn {
+pub(super) struct PutIn {
     /// Everything; nothing when it is not given.
-    whole: Option<f64>,
+    pub whole: Option<f64>,
     /// Part by part, where it is given so.
-    parts: Vec<(String, f64)>,
+    pub parts: Vec<(String, f64)>,
 }
 
 /// Money for the whole and for the parts; nothing when it is wrong.

@@ -49,9 +49,13 @@ pub(crate) fn draw(
     write: &dyn Fn(f64) -> String,
     marks: &Marks,
 ) {
+    // A part that no bar has is no part of the picture.
+    let drawn = |part: usize| bars.iter().any(|b| b.parts[part] != 0.0);
     let entries: Vec<(Swatch, &str)> = parts
         .iter()
-        .map(|(name, colour, hatch)| (Swatch::Area(*colour, *hatch), *name))
+        .enumerate()
+        .filter(|(part, _)| drawn(*part))
+        .map(|(_, (name, colour, hatch))| (Swatch::Area(*colour, *hatch), *name))
         .collect();
     let top = scene.key(&entries, MARGIN, top, WIDTH - 2.0 * MARGIN) + 6.0;
     let bottom = top + ROW * bars.len() as f64;

@@ -45,7 +45,12 @@ const PLOT: f64 = 430.0;
 /// [`ChartError::NotFinite`] for a value that is not a number.
 pub fn contours(data: &Contours, marks: &Marks) -> Result<Picture, ChartError> {
     check(data)?;
-    let title = "Where it pays, over both prices";
+    // Lines of constant ratio are drawn over two prices only.
+    let title = if data.ratios.is_empty() {
+        "Where it pays, over two quantities"
+    } else {
+        "Where it pays, over both prices"
+    };
     let outcome = sentence(&data.outcome, 420.0);
     let subtitle = format!("{outcome} Each line joins prices with the same result.");
     let mut scene = Scene::new(f64::MAX);
@@ -261,7 +266,7 @@ fn alt(data: &Contours, zero: bool, marks: &Marks) -> String {
     };
     if let Some((x, y)) = data.now {
         out += &format!(
-            " The prices are now {} {} and {} {}.",
+            " They are now {} {} and {} {}.",
             marks.number(x, 1),
             data.x_name.1,
             marks.number(y, 1),

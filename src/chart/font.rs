@@ -75,7 +75,7 @@ pub(crate) fn advance_em(font: &FontRef<'_>, units_per_em: f32, c: char) -> f32 
 
 /// `text` as it may be drawn: one line, without control characters, without marks that would turn the reading
 /// direction of what follows, without characters that XML forbids.
-pub(crate) fn clean(text: &str) -> String {
+pub fn clean(text: &str) -> String {
     let turns = |c: char| {
         matches!(c, '\u{61C}' | '\u{200B}' | '\u{200E}' | '\u{200F}' | '\u{FEFF}'
             | '\u{202A}'..='\u{202E}' | '\u{2060}'..='\u{206F}')

@@ -1,97 +1,7 @@
-//! How figures are written in pictures: decimal and thousands marks, money, minus signs, steps of 1, 2 and 5.
+//! Numbers in pictures: steps of 1, 2 and 5, units of money, lists.
 
-/// The marks of a place.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub struct Marks {
-    /// Between whole and fraction.
-    pub decimal: char,
-    /// Between thousands; none for none.
-    pub thousands: Option<char>,
-}
-
-impl Default for Marks {
-    /// A point and a comma, as in English.
-    fn default() -> Self {
-        Self {
-            decimal: '.',
-            thousands: Some(','),
-        }
-    }
-}
-
-impl Marks {
-    /// `value` with so many decimals, a true minus sign, and no minus before a zero.
-    pub fn number(&self, value: f64, decimals: usize) -> String {
-        if !value.is_finite() {
-            return "–".into();
-        }
-        let text = format!("{:.decimals$}", value.abs());
-        let (whole, fraction) = text.split_once('.').unwrap_or((&text, ""));
-        let mut out = String::new();
-        if value < 0.0 && text.bytes().any(|b| b.is_ascii_digit() && b != b'0') {
-            out.push('−');
-        }
-        for (i, digit) in whole.chars().enumerate() {
-            if let Some(mark) = self.thousands
-                && i > 0
-                && (whole.len() - i).is_multiple_of(3)
-            {
-                out.push(mark);
-            }
-            out.push(digit);
-        }
-        if !fraction.is_empty() {
-            out.push(self.decimal);
-            out.push_str(fraction);
-        }
-        out
-    }
-
-    /// A count with its noun: `1 hour`, `8,760 hours`.
-    pub(crate) fn count(&self, n: usize, noun: &str) -> String {
-        let plural = if n == 1 { "" } else { "s" };
-        format!("{} {noun}{plural}", self.number(n as f64, 0))
-    }
-
-    /// An amount of money in whole units, the sign before the symbol: `−£1,234`, `1.234 kr`-like codes as `CHF 1,234`.
-    pub fn money(&self, currency: &str, amount: f64) -> String {
-        self.money_to(currency, amount, 0)
-    }
-
-    /// An amount of money with so many decimals.
-    pub fn money_to(&self, currency: &str, amount: f64, decimals: usize) -> String {
-        let number = self.number(amount, decimals);
-        let (sign, digits) = match number.strip_prefix('−') {
-            Some(rest) => ("−", rest),
-            None => ("", number.as_str()),
-        };
-        format!("{sign}{}{digits}", symbol(currency))
-    }
-}
-
-/// The sign written before an amount: the symbol of the three commonest codes (ISO 4217), else the code itself and a
-/// space that does not break.
-pub(crate) fn symbol(currency: &str) -> String {
-    match currency {
-        "GBP" => "£".into(),
-        "EUR" => "€".into(),
-        "USD" => "$".into(),
-        other => {
-            let code: String = super::font::clean(other)
-                .chars()
-                .take(LONGEST_CODE)
-                .collect();
-            if code.trim().is_empty() {
-                String::new()
-            } else {
-                format!("{code}\u{a0}")
-            }
-        }
-    }
-}
-
-/// Letters kept of a currency code; a real one has three.
-const LONGEST_CODE: usize = 5;
+pub use crate::locale::Marks;
+use crate::locale::symbol;
 
 /// The unit of money as it stands in an axis title.
 pub(crate) fn money_unit(currency: &str) -> String {
@@ -178,37 +88,6 @@ pub(crate) fn list(parts: &[String]) -> String {
 mod tests {
     use super::*;
     use proptest::prelude::*;
-
-    #[test]
-    fn numbers_are_written_as_people_write_them() {
-        let en = Marks::default();
-        assert_eq!(en.number(1234567.891, 2), "1,234,567.89");
-        assert_eq!(en.number(-0.4, 0), "0");
-        assert_eq!(en.number(-12.5, 1), "−12.5");
-        assert_eq!(en.number(f64::NAN, 1), "–");
-        let de = Marks {
-            decimal: ',',
-            thousands: Some('.'),
-        };
-        assert_eq!(de.number(12345.6, 1), "12.345,6");
-        assert_eq!(
-            Marks {
-                decimal: '.',
-                thousands: None
-            }
-            .number(12345.6, 0),
-            "12346"
-        );
-    }
-
-    #[test]
-    fn money_has_its_sign_first() {
-        let en = Marks::default();
-        assert_eq!(en.money("GBP", -1234.4), "−£1,234");
-        assert_eq!(en.money("EUR", 0.0), "€0");
-        assert_eq!(en.money("CHF", 12.0), "CHF\u{a0}12");
-        assert_eq!(en.money_to("USD", 3.5, 2), "$3.50");
-    }
 
     #[test]
     fn ticks_of_common_ranges() {

@@ -12,6 +12,10 @@ use crate::report::plain_table;
 
 /// Solve one refrigerant cycle and print its state points.
 #[derive(Debug, clap::Args)]
+#[command(after_help = "\
+Examples:
+  winterledger cycle --refrigerant R290 --evaporating -5 --condensing 45
+  winterledger cycle --refrigerant R32 --evaporating -12 --condensing 40 --chart cycle.svg")]
 pub struct Args {
     /// Refrigerant: R290, R32, R410A, R134a, R1234yf or R600a.
     #[arg(long, value_name = "NAME")]

@@ -1,16 +1,25 @@
 //! `estimate`: what each system of a brief would cost in a year.
 
-use std::path::PathBuf;
+use std::error::Error;
+use std::path::{Path, PathBuf};
 
-use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
+use super::progress::Progress;
+use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
 use crate::answer::{Estimate, compare_patterns, compose};
 use crate::brief::{Brief, DEFAULTS};
-use crate::chart::{AnnualCost, Marks, SystemCost, annual_cost};
+use crate::chart::ChartError;
 use crate::home::Pattern;
 use crate::problem::Problems;
-use crate::report::{accounts_text, estimate_text, home_text, ledger_csv, patterns_text};
+use crate::report::{
+    Drawn, Material, accounts_text, estimate_text, home_text, ledger_csv, patterns_text, pictures,
+    report_html,
+};
 use crate::study::{Outcome, bills};
 use crate::year::Ledger;
+
+/// Names of the files that are always written.
+const RESULT: &str = "result.json";
+const REPORT: &str = "report.html";
 
 /// Yearly cost and carbon of every system of a brief, beside what heats the home today.
 ///
@@ -19,12 +28,12 @@ use crate::year::Ledger;
 #[command(after_help = "\
 Examples:
   winterledger estimate                                 the built-in demonstration home
-  winterledger estimate briefs/terrace.toml --out out   one ledger a system, result.json, charts
+  winterledger estimate briefs/terrace.toml --out out   the report, its pictures, ledgers, result.json
   winterledger estimate --format json                   the same figures for another program")]
 pub struct Args {
     /// Brief (TOML); without one, the built-in demonstration home.
     brief: Option<PathBuf>,
-    /// Folder for the ledgers (CSV), result.json and the charts.
+    /// Folder for report.html, the pictures, the ledgers (CSV) and result.json.
     #[arg(long, value_name = "DIR")]
     out: Option<PathBuf>,
     /// Overwrite files that are there already.
@@ -66,9 +75,14 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         Some(path) => Brief::read(path)?,
         None => Brief::demonstration()?,
     };
+    if let Some(folder) = &args.out {
+        check_folder(folder, &[RESULT, REPORT], args.force)?;
+    }
     let mut ledgers = Vec::new();
     let mut outcomes = Vec::with_capacity(brief.case.contenders.len());
+    let progress = Progress::new(brief.case.contenders.len() as u64 + 2);
     for contender in &brief.case.contenders {
+        progress.at(&contender.system.label);
         let mut ledger = args
             .out
             .as_ref()
@@ -76,6 +90,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         outcomes.push(brief.case.run_one(contender, ledger.as_mut())?);
         ledgers.extend(ledger);
     }
+    progress.at("break-even");
     let mut estimate = compose(&brief.case, &outcomes, &brief.told)?;
     if args.bills {
         estimate = estimate.with_bills(&brief.case, &outcomes)?;
@@ -84,22 +99,18 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         estimate.patterns = compare_patterns(&brief.case, &usual_pattern())?;
     }
     if let Some(folder) = &args.out {
-        let mut files = pictures(&estimate, folder)?;
-        for (i, (contender, ledger)) in brief.case.contenders.iter().zip(&ledgers).enumerate() {
-            let name = format!(
-                "ledger-{}-{}.csv",
-                i + 1,
-                file_name(&contender.system.label)
-            );
-            let content = ledger_csv(ledger, &brief.case.site.axis, brief.case.time_zone)
-                .map_err(|error| cannot_write(folder, &error))?;
-            files.push(NewFile::new(folder.join(name), content));
-        }
-        let json =
-            serde_json::to_vec_pretty(&estimate).map_err(|error| cannot_write(folder, &error))?;
-        files.push(NewFile::new(folder.join("result.json"), json));
+        progress.at("pictures and report");
+        let material = Material {
+            case: &brief.case,
+            outcomes: &outcomes,
+            ledgers: &ledgers,
+            estimate: &estimate,
+            locale: brief.locale,
+        };
+        let files = files(folder, &material).map_err(|error| cannot_write(folder, &*error))?;
         write_files(&files, args.force)?;
     }
+    progress.done();
     warn(&estimate.findings);
     match args.format {
         Format::Json => print_json(&estimate),
@@ -120,6 +131,31 @@ fn accounts(estimate: &Estimate, brief: &Brief, outcomes: &[Outcome]) -> Result<
         .map(|(contender, outcome)| bills(contender, outcome))
         .collect::<Result<Vec<_>, _>>()?;
     Ok(accounts_text(estimate, &bills))
+}
+
+/// Everything that goes into the folder.
+fn files(folder: &Path, material: &Material<'_>) -> Result<Vec<NewFile>, Box<dyn Error>> {
+    let case = material.case;
+    let mut files = vec![NewFile::new(
+        folder.join(RESULT),
+        serde_json::to_vec_pretty(material.estimate)?,
+    )];
+    let systems = case.contenders.iter().zip(material.ledgers);
+    for (i, (contender, ledger)) in systems.enumerate() {
+        let label = file_name(&contender.system.label);
+        let content = ledger_csv(ledger, &case.site.axis, case.time_zone)?;
+        let name = format!("ledger-{}-{label}.csv", i + 1);
+        files.push(NewFile::new(folder.join(name), content));
+    }
+    let drawn = pictures(material)?;
+    for (drawn, png) in drawn.iter().zip(pngs(&drawn)?) {
+        let path = |ending: &str| folder.join(format!("{}.{ending}", drawn.name));
+        files.push(NewFile::new(path("svg"), drawn.picture.svg()?));
+        files.push(NewFile::new(path("png"), png));
+    }
+    let page = report_html(material, &drawn)?;
+    files.push(NewFile::new(folder.join(REPORT), page));
+    Ok(files)
 }
 
 fn text(estimate: &Estimate, args: &Args) -> String {
@@ -146,36 +182,25 @@ fn usual_pattern() -> Pattern {
     pattern
 }
 
-fn pictures(estimate: &Estimate, folder: &std::path::Path) -> Result<Vec<NewFile>, Failure> {
-    let data = AnnualCost {
-        currency: estimate.currency.clone(),
-        systems: estimate
-            .systems
-            .iter()
-            .map(|system| SystemCost {
-                label: system.label.clone(),
-                today: system.today,
-                energy: system.cost_energy,
-                standing: system.cost_standing,
-                tax: system.cost_tax.unwrap_or(0.0),
-            })
-            .collect(),
-    };
-    let picture =
-        annual_cost(&data, &Marks::default()).map_err(|error| cannot_write(folder, &error))?;
-    let png = picture
-        .png()
-        .map_err(|error| cannot_write(folder, &error))?;
-    let svg = picture
-        .svg()
-        .map_err(|error| cannot_write(folder, &error))?;
-    Ok(vec![
-        NewFile::new(folder.join("annual-cost.svg"), svg),
-        NewFile::new(folder.join("annual-cost.png"), png),
-    ])
+/// The pictures as PNG, painted side by side: at print resolution that is the longest part of the work.
+fn pngs(drawn: &[Drawn]) -> Result<Vec<Vec<u8>>, ChartError> {
+    let hands = std::thread::available_parallelism().map_or(1, usize::from);
+    let share = drawn.len().div_ceil(hands).max(1);
+    let painted = std::thread::scope(|scope| {
+        let workers: Vec<_> = drawn
+            .chunks(share)
+            .map(|part| scope.spawn(|| part.iter().map(|d| d.picture.png()).collect::<Vec<_>>()))
+            .collect();
+        let done = workers.into_iter().map(|worker| worker.join());
+        done.collect::<Result<Vec<_>, _>>()
+    });
+    match painted {
+        Ok(parts) => parts.into_iter().flatten().collect(),
+        Err(_) => Err(ChartError::Drawing("a picture was not finished".into())),
+    }
 }
 
-fn cannot_write(folder: &std::path::Path, error: &dyn std::fmt::Display) -> Failure {
+fn cannot_write(folder: &std::path::Path, error: &dyn Error) -> Failure {
     Failure::Write {
         path: folder.to_owned(),
         reason: error.to_string(),

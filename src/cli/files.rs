@@ -86,6 +86,27 @@ fn readable(_: &NamedTempFile) -> std::io::Result<()> {
     Ok(())
 }
 
+/// Makes a folder where there is none and tries to write into it, so that a refusal comes before the long work.
+///
+/// # Errors
+/// [`Failure::Write`] when it cannot be made or written, or when without `force` one of the `names` is there already.
+pub fn check_folder(folder: &Path, names: &[&str], force: bool) -> Result<(), Failure> {
+    let fail = |path: &Path, reason: String| Failure::Write {
+        path: path.to_owned(),
+        reason,
+    };
+    fs::create_dir_all(folder).map_err(|e| fail(folder, e.to_string()))?;
+    NamedTempFile::new_in(folder).map_err(|e| fail(folder, e.to_string()))?;
+    let there = names.iter().map(|name| folder.join(name));
+    match there.into_iter().find(|path| !force && path.exists()) {
+        Some(path) => Err(fail(
+            &path,
+            "it is there already; --force overwrites it".to_owned(),
+        )),
+        None => Ok(()),
+    }
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

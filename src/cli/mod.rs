@@ -11,9 +11,15 @@ mod explain;
 mod failure;
 mod files;
 mod ground;
+mod init;
 mod machine;
+mod manual;
+mod odds;
 mod output;
+mod progress;
 mod rating;
+mod schema;
+mod study;
 mod tariff;
 mod weather;
 
@@ -22,7 +28,7 @@ use std::process::ExitCode;
 use clap::{Parser, Subcommand};
 
 pub use failure::Failure;
-pub use files::{NewFile, write_files};
+pub use files::{NewFile, check_folder, write_files};
 pub use output::{Format, print, print_json, warn};
 
 /// What a heat pump would cost to run in one home, hour by hour, beside the gas boiler.
@@ -41,6 +47,8 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Command {
     Estimate(estimate::Args),
+    Study(study::Args),
+    Odds(odds::Args),
     Bills(bills::Args),
     Explain(explain::Args),
     Cycle(cycle::Args),
@@ -48,7 +56,11 @@ enum Command {
     Rating(rating::Args),
     Tariff(tariff::Args),
     Ground(ground::Args),
-    Weather(weather::Args),
+    Init(init::Args),
+    Schema(schema::Args),
+    Completions(manual::Completions),
+    Manual(manual::Manual),
+    Weather(Box<weather::Args>),
 }
 
 /// Runs the command line of this process and returns its exit status.
@@ -63,6 +75,8 @@ pub fn run() -> ExitCode {
 fn dispatch(command: &Command) -> Result<(), Failure> {
     match command {
         Command::Estimate(args) => estimate::run(args),
+        Command::Study(args) => study::run(args),
+        Command::Odds(args) => odds::run(args),
         Command::Bills(args) => bills::run(args),
         Command::Explain(args) => explain::run(args),
         Command::Cycle(args) => cycle::run(args),
@@ -70,6 +84,10 @@ fn dispatch(command: &Command) -> Result<(), Failure> {
         Command::Rating(args) => rating::run(args),
         Command::Tariff(args) => tariff::run(args),
         Command::Ground(args) => ground::run(args),
+        Command::Init(args) => init::run(args),
+        Command::Schema(args) => schema::run(args),
+        Command::Completions(args) => manual::completions(args),
+        Command::Manual(args) => manual::manual(args),
         Command::Weather(args) => weather::run(args),
     }
 }

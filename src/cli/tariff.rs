@@ -20,6 +20,10 @@ use crate::units::{Currency, Fuel};
 ///
 /// Without --load the bill is an example: a stated amount, the same in every hour of a year.
 #[derive(Debug, clap::Args)]
+#[command(after_help = "\
+Examples:
+  winterledger tariff tariffs/cheap_night_electricity.toml
+  winterledger tariff tariffs/flat_gas.toml --kwh 12000")]
 pub struct Args {
     /// Tariff file (TOML).
     file: PathBuf,

@@ -42,9 +42,9 @@ impl HybridRule {
         }
     }
 
-    /// Whether it looks at prices, so that another price makes another year.
-    pub fn follows_prices(self) -> bool {
-        self == Self::ByCost
+    /// Whether it looks at prices or carbon, so that other ones make another year.
+    pub fn follows_signals(self) -> bool {
+        matches!(self, Self::ByCost | Self::ByCarbon)
     }
 
     /// Decides an hour. The machine serves when both are alike.

@@ -1,72 +1,13 @@
 //! Radiators and floors: the water temperatures that carry a given heat into the room.
 
-/// What carries the heat into the rooms, with the exponent of its output.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub enum EmitterKind {
-    /// Panel radiators: output ∝ ΔT^1.3 (EN 442).
-    Radiators,
-    /// Floor heating: heat from floor to room ∝ (θF − θi)^1.1 (EN 1264); the same exponent is used from water to room.
-    Underfloor,
-    /// Fan convectors: output ∝ ΔT^1.05 (common practice: exponent 1.0 to 1.1).
-    FanConvectors,
-}
+use super::control::Control;
+use super::group::{EmitterKind, Group, WaterTemperatures};
 
-impl EmitterKind {
-    /// Exponent of output against excess temperature.
-    pub fn exponent(self) -> f64 {
-        match self {
-            Self::Radiators => 1.3,
-            Self::Underfloor => 1.1,
-            Self::FanConvectors => 1.05,
-        }
-    }
-}
-
-/// Part of a home's emitters: one kind at its own design temperatures.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Group {
-    /// Kind of emitter.
-    pub kind: EmitterKind,
-    /// Share of the design heat load, 0 to 1.
-    pub share: f64,
-    /// Flow at the design heat load, °C.
-    pub flow_c: f64,
-    /// Return at the design heat load, °C.
-    pub return_c: f64,
-}
+/// Least difference of flow and a group's return that is told from none, K.
+const LEAST_DIFFERENCE_K: f64 = 1e-9;
 
 /// Most groups of a home.
 pub const MOST_GROUPS: usize = 4;
-
-/// How the flow temperature is set.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub enum Control {
-    /// Just as hot as the load of the hour needs.
-    FollowingLoad,
-    /// A straight line over outdoor temperature through two points (outdoor °C, flow °C), level beyond them.
-    Line {
-        /// The colder point.
-        cold: (f64, f64),
-        /// The milder point.
-        mild: (f64, f64),
-    },
-    /// The same at every load, °C.
-    Fixed(f64),
-}
-
-impl Control {
-    /// The flow it sets at an outdoor temperature, °C; nothing when it follows the load.
-    pub fn flow_c(&self, outdoor_c: f64) -> Option<f64> {
-        match *self {
-            Self::FollowingLoad => None,
-            Self::Fixed(flow_c) => Some(flow_c),
-            Self::Line { cold, mild } => {
-                let share = ((outdoor_c - cold.0) / (mild.0 - cold.0)).clamp(0.0, 1.0);
-                Some(cold.1 + share * (mild.1 - cold.1))
-            }
-        }
-    }
-}
 
 /// Emitters sized once, at their own design point; they do not grow when the heat loss is varied.
 ///
@@ -84,22 +25,6 @@ pub struct Emitters {
     header_k: f64,
 }
 
-/// Water temperatures at a load.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct WaterTemperatures {
-    /// To the emitters, °C.
-    pub flow_c: f64,
-    /// Coming back, °C.
-    pub return_c: f64,
-}
-
-impl WaterTemperatures {
-    /// Mean of flow and return, °C: what the emitter's output follows.
-    pub fn mean_c(&self) -> f64 {
-        (self.flow_c + self.return_c) / 2.0
-    }
-}
-
 /// What the control lets the emitters have.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Supply {
@@ -109,52 +34,6 @@ pub struct Supply {
     pub water: WaterTemperatures,
     /// Flow minus return of the emitters at their designed water flow, K: with valves throttling, less than that of `water`.
     pub spread_k: f64,
-}
-
-/// Iterations of the inverse emitter curve; convergence is quadratic.
-const MAX_ITERATIONS: usize = 50;
-/// Flow temperature is solved to this many kelvins.
-const TOLERANCE_K: f64 = 1e-9;
-
-impl Group {
-    fn spread_k(&self) -> f64 {
-        self.flow_c - self.return_c
-    }
-
-    fn excess_k(&self, room_c: f64) -> f64 {
-        (self.flow_c + self.return_c) / 2.0 - room_c
-    }
-
-    /// Water temperatures at a share of its design output, into rooms at `now_c`, designed for rooms at `room_c`.
-    fn at_share(&self, share: f64, room_c: f64, now_c: f64) -> WaterTemperatures {
-        let mean_c = now_c + self.excess_k(room_c) * share.powf(1.0 / self.kind.exponent());
-        let half_spread_k = self.spread_k() * share / 2.0;
-        WaterTemperatures {
-            flow_c: mean_c + half_spread_k,
-            return_c: mean_c - half_spread_k,
-        }
-    }
-
-    /// Share of its design output at a flow this much above the room, K: the inverse of [`Group::at_share`].
-    fn share_at(&self, above_room_k: f64, room_c: f64) -> f64 {
-        if above_room_k <= 0.0 {
-            return 0.0;
-        }
-        // Solve excess = D s^(1/n) + (S/2) s for the share s; with y = s^(1/n) both terms grow with y.
-        let n = self.kind.exponent();
-        let design_excess_k = self.excess_k(room_c);
-        let half_spread_k = self.spread_k() / 2.0;
-        let mut y = above_room_k / design_excess_k;
-        for _ in 0..MAX_ITERATIONS {
-            let error_k = design_excess_k * y + half_spread_k * y.powf(n) - above_room_k;
-            if error_k.abs() < TOLERANCE_K {
-                break;
-            }
-            // Newton from above on a convex function stays above the root and cannot leave the domain.
-            y -= error_k / (design_excess_k + half_spread_k * n * y.powf(n - 1.0));
-        }
-        y.powf(n)
-    }
 }
 
 impl Emitters {
@@ -327,7 +206,7 @@ impl Emitters {
         // Each group draws from the common flow what carries its heat down to its own return.
         let (mut water_flow, mut mixed) = (0.0, 0.0);
         for (water, group) in each.iter().zip(self.groups()) {
-            let drawn = group.share / (flow_c - water.return_c).max(TOLERANCE_K);
+            let drawn = group.share / (flow_c - water.return_c).max(LEAST_DIFFERENCE_K);
             water_flow += drawn;
             mixed += drawn * water.return_c;
         }

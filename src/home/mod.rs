@@ -4,21 +4,25 @@
 //! heat it got into the room's next temperature. [`Emitters`] turn that heat into the flow temperature the machine must reach;
 //! [`worst_room`] says which room sets it. [`HotWater`] is a duty of its own, at its own temperature, answered by a [`Store`].
 
+mod control;
 mod draws;
 mod emitters;
 mod fabric;
 mod floor;
+mod group;
 mod pattern;
 mod pipe;
 mod rooms;
 mod store;
 
+pub use control::Control;
 pub use draws::{HotWater, TappingProfile, WATER_KWH_PER_L_K};
-pub use emitters::{Control, EmitterKind, Emitters, Group, MOST_GROUPS, Supply, WaterTemperatures};
+pub use emitters::{Emitters, MOST_GROUPS, Supply};
 pub use fabric::{
     AIR_WH_PER_M3_K, Construction, Fabric, RECOVERY_H, RoomStep, ventilation_w_per_k,
 };
 pub use floor::{EDGE_FLOOR_C, OCCUPIED_FLOOR_C, floor_output_w_per_m2, floor_surface_c};
+pub use group::{EmitterKind, Group, WaterTemperatures};
 pub use pattern::{DaySpan, FROST_C, Pattern, WarmUp};
 pub use pipe::{QUIET_M_PER_S, smallest_pipe_mm, water_flow_l_per_min};
 pub use rooms::{Room, WorstRoom, worst_room};

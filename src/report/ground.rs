@@ -23,14 +23,18 @@ pub fn ground_text(first: &GroundAnswer) -> String {
 }
 
 fn heading(answer: &GroundAnswer) -> String {
+    let mean = if answer.kind == "water" {
+        "mean"
+    } else {
+        "undisturbed"
+    };
     let mut text = format!(
-        "{}: {}, undisturbed {:.1} °C",
+        "{}: {}, {mean} {:.1} °C",
         answer.label, answer.kind, answer.undisturbed_c
     );
     if let Some(buried) = &answer.buried {
-        let _ = write!(
-            text,
-            "\n  {:.0} m, wall to brine {:.3} m K/W; {}, {:.2} kg/s, Reynolds {:.0},\n  freezes at {:.1} °C; pump of the loop {:.0} W",
+        let loop_words = format!(
+            "{:.0} m, wall to brine {:.3} m K/W; {}, {:.2} kg/s, Reynolds {:.0}, freezes at {:.1} °C; pump of the loop {:.0} W",
             buried.length_m,
             buried.resistance_m_k_per_w,
             buried.brine,
@@ -39,6 +43,7 @@ fn heading(answer: &GroundAnswer) -> String {
             buried.brine_freezing_c,
             buried.pump_w,
         );
+        let _ = write!(text, "\n{}", wrapped(&loop_words));
     }
     text
 }
@@ -69,6 +74,10 @@ fn table(answer: &GroundAnswer) -> String {
         }),
         row("Hours the machine stood", &|y| y.hours_stopped.to_string()),
     ];
+    // A source without walls has no row for them.
+    let rows = rows
+        .into_iter()
+        .filter(|row| row.iter().skip(1).any(|cell| cell != "–"));
     let years = answer.years.iter().map(|y| y.year.to_string());
     plain_table(
         std::iter::once("Year of its life".to_owned()).chain(years),

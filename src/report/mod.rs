@@ -1,17 +1,34 @@
-//! Answers as text and files.
+//! Answers as text, page and files.
+//!
+//! The long form is written once: `sections/*.md` are Markdown templates, `facts` is what they may speak of, `sentences` fills
+//! them, `blocks` reads the Markdown, `page` sets it as HTML. `pictures` fills the chart room's pictures.
 
 mod account;
+mod blocks;
+mod error;
 mod explain;
+mod facts;
 mod ground;
 mod home;
+mod hours;
 mod ledger;
+mod odds;
+mod page;
+mod pictures;
+mod sentences;
+mod study;
 mod table;
 mod text;
 
 pub use account::{accounts_text, bill_table};
+pub use error::ReportError;
 pub use explain::explain_text;
 pub use ground::ground_text;
 pub use home::{home_text, patterns_text};
 pub use ledger::{ledger_csv, ledger_legend};
+pub use odds::odds_text;
+pub use page::report_html;
+pub use pictures::{Drawn, Material, pictures};
+pub use study::study_text;
 pub use table::{plain_table, plain_table_within};
 pub use text::estimate_text;

@@ -7,7 +7,7 @@ use super::table::plain_table_within;
 use crate::answer::{Estimate, LeverAnswer, SystemAnswer};
 
 /// Width of everything that is printed, characters.
-const WIDTH: u16 = 80;
+pub(super) const WIDTH: u16 = 80;
 /// Systems beside each other, today's among them.
 const SYSTEMS_ABREAST: usize = 4;
 

@@ -5,124 +5,12 @@
 
 use argmin::core::{CostFunction, Error, Executor, State as _};
 use argmin::solver::brent::BrentOpt;
-use chrono::NaiveDate;
 use statrs::distribution::{ContinuousCDF, StudentsT};
 
-use super::days::{DailyWeather, Day};
-use super::model::{Line, Metered, inverse, line};
+use super::days::DailyWeather;
+use super::found::{FitProblem, Limits, Point, Signature, Stated};
+use super::model::{Line, Metered, inverse, line, quadratic};
 use super::readings::Interval;
-
-/// What is stated about a heater and the load without heating.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Stated {
-    /// Seasonal efficiency of the heater, gross.
-    pub efficiency: f64,
-    /// It lies within this of the truth with 95 % confidence.
-    pub efficiency_within: f64,
-    /// Part of the base load that is hot water and swings with the cold water.
-    pub hot_water_share: f64,
-    /// It lies within this of the truth with 95 % confidence.
-    pub hot_water_share_within: f64,
-    /// By how much hot water is above its mean when the cold water is coldest, as a share.
-    pub hot_water_swing: f64,
-}
-
-/// A figure with its 95 % limits.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Limits {
-    /// The figure.
-    pub value: f64,
-    /// Lower limit.
-    pub low: f64,
-    /// Upper limit.
-    pub high: f64,
-}
-
-impl Limits {
-    fn around(value: f64, half: f64) -> Self {
-        Self {
-            value,
-            low: value - half,
-            high: value + half,
-        }
-    }
-
-    /// Half the width of the limits.
-    pub fn half(&self) -> f64 {
-        (self.high - self.low) / 2.0
-    }
-}
-
-/// One interval beside the fit.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Point {
-    /// First day.
-    pub from: NaiveDate,
-    /// Day after the last.
-    pub to: NaiveDate,
-    /// Mean outdoor temperature, °C.
-    pub mean_c: f64,
-    /// Fuel a day, kWh.
-    pub kwh_per_day: f64,
-    /// Fuel a day by the fit, kWh.
-    pub fitted_kwh_per_day: f64,
-    /// How many standard deviations it lies off a fit without it (externally studentized residual).
-    pub off: f64,
-    /// Whether that is too much for chance (Bonferroni, 5 % over all intervals).
-    pub odd: bool,
-}
-
-/// The signature of a home.
-#[derive(Debug, Clone, PartialEq)]
-pub struct Signature {
-    /// Heat-loss coefficient, W/K; its limits hold the efficiency and the hot water too.
-    pub heat_loss_w_per_k: Limits,
-    /// Outdoor temperature below which it is heated, °C.
-    pub base_temperature_c: Limits,
-    /// Fuel that is used without heating, kWh a day.
-    pub base_load_kwh_per_day: Limits,
-    /// Fuel for each degree below the base temperature, kWh a day and kelvin.
-    pub slope_kwh_per_k_day: f64,
-    /// Whether the base temperature was fitted; else it was taken from published homes.
-    pub base_temperature_fitted: bool,
-    /// Share of the variance that is explained.
-    pub r_squared: f64,
-    /// Root mean square error over the mean, degrees of freedom counted.
-    pub cv_rmse: f64,
-    /// Every interval.
-    pub points: Vec<Point>,
-    swing: f64,
-    covariance: [[f64; 3]; 3],
-    t: f64,
-}
-
-/// Why there is no signature.
-#[derive(Debug, Clone, PartialEq)]
-pub enum FitProblem {
-    /// Too few intervals.
-    TooFew {
-        /// How many there are.
-        found: usize,
-    },
-    /// An interval is not inside the weather.
-    OutsideWeather {
-        /// First day.
-        from: NaiveDate,
-        /// Day after the last.
-        to: NaiveDate,
-        /// Its line in the file.
-        line: usize,
-    },
-    /// Fuel does not rise when it is colder.
-    NoHeating,
-    /// The intervals do not tell where heating begins.
-    BaseTemperatureOpen {
-        /// Where the search ended, °C.
-        at_c: f64,
-    },
-    /// The search did not converge.
-    NotConverged,
-}
 
 /// Fewest intervals for a base temperature of published homes, and for one that is fitted.
 const LEAST_INTERVALS: usize = 4;
@@ -395,51 +283,16 @@ fn points(
         .collect()
 }
 
-/// `rᵀ M r`.
-fn quadratic(r: &[f64; 3], m: &[[f64; 3]; 3]) -> f64 {
-    (0..3)
-        .map(|i| (0..3).map(|j| r[i] * m[i][j] * r[j]).sum::<f64>())
-        .sum()
-}
-
 /// Quantile of Student's t with `freedom` > 0 degrees of freedom.
 fn quantile(freedom: f64, probability: f64) -> f64 {
     StudentsT::new(0.0, 1.0, freedom).map_or(f64::INFINITY, |t| t.inverse_cdf(probability))
 }
 
-impl Signature {
-    /// How many intervals it was made of.
-    pub fn n(&self) -> usize {
-        self.points.len()
-    }
-
-    /// Fuel of a stretch of days by the fit, kWh, with limits that hold the fit's own uncertainty.
-    pub fn fuel_kwh(&self, days: &[Day]) -> Limits {
-        let all = Metered::new(days, 0.0);
-        let base_c = self.base_temperature_c.value;
-        let number = days.len() as f64;
-        let shape = [
-            number * all.base_shape(self.swing),
-            number * all.degrees(base_c),
-            number * self.slope_kwh_per_k_day * all.colder(base_c),
-        ];
-        let kwh = self.base_load_kwh_per_day.value * shape[0] + self.slope_kwh_per_k_day * shape[1];
-        Limits::around(
-            kwh,
-            self.t * quadratic(&shape, &self.covariance).max(0.0).sqrt(),
-        )
-    }
-
-    /// Fuel of a mean day at an outdoor temperature (°C), kWh: the line of the picture.
-    pub fn line_kwh_per_day(&self, outdoor_c: f64) -> f64 {
-        let below_k = (self.base_temperature_c.value - outdoor_c).max(0.0);
-        self.base_load_kwh_per_day.value + self.slope_kwh_per_k_day * below_k
-    }
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::signature::Day;
+    use chrono::NaiveDate;
 
     fn weather() -> DailyWeather {
         let first = NaiveDate::from_ymd_opt(2023, 1, 1).unwrap();

@@ -1,13 +1,16 @@
 //! What a home's own meter says: base load, heat-loss coefficient and base temperature from readings and weather.
 //!
-//! [`Readings`] are read and checked, [`DailyWeather`] is the same period's weather, [`fit`] makes a [`Signature`] of both
+//! [`Readings`] are read and checked, [`DailyWeather`] is the same period's weather, [`fit()`] makes a [`Signature`] of both
 //! (the energy signature of Fels 1986), whose limits hold what the heater's efficiency and the hot water leave open.
 
 mod days;
 mod fit;
+mod found;
 mod model;
 mod readings;
+mod rows;
 
 pub use days::{DailyWeather, Day};
-pub use fit::{FitProblem, Limits, Point, Signature, Stated, fit};
+pub use fit::fit;
+pub use found::{FitProblem, Limits, Point, Signature, Stated};
 pub use readings::{Conversion, Interval, Readings};

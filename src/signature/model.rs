@@ -124,6 +124,13 @@ pub(super) fn inverse(m: &[[f64; 3]; 3]) -> Option<[[f64; 3]; 3]> {
     Some(inverse)
 }
 
+/// `rᵀ M r`.
+pub(super) fn quadratic(r: &[f64; 3], m: &[[f64; 3]; 3]) -> f64 {
+    (0..3)
+        .map(|i| (0..3).map(|j| r[i] * m[i][j] * r[j]).sum::<f64>())
+        .sum()
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

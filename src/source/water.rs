@@ -36,10 +36,14 @@ impl WaterSource {
         }
     }
 
+    /// How far the water is cooled at a draw (kW), K.
+    pub fn cooling_k(&self, draw_kw: f64) -> f64 {
+        draw_kw / (self.flow_l_per_s * WATER_KJ_PER_L_K)
+    }
+
     /// Temperature at which the water leaves at a draw (kW), °C.
     pub fn leaving_c(&self, hour: usize, draw_kw: f64) -> f64 {
-        let water_c = self.water_c.get(hour).copied().unwrap_or(f64::NAN);
-        water_c - draw_kw / (self.flow_l_per_s * WATER_KJ_PER_L_K)
+        self.water_c.get(hour).copied().unwrap_or(f64::NAN) - self.cooling_k(draw_kw)
     }
 }
 

@@ -56,16 +56,39 @@ pub(super) fn cold_side(machine: &MachineSystem, outdoor_c: f64, ground: &Memory
 
 impl Surplus<'_> {
     fn at(&self, outdoor_c: f64) -> f64 {
-        let home = &self.system.home;
-        let load_kw = home
-            .fabric
-            .design_load_kw(self.indoor_c, outdoor_c)
-            .max(0.0);
-        let cold = cold_side(self.machine, outdoor_c, &self.ground);
-        let flow_c =
-            home.emitters.at_load(load_kw, self.indoor_c).flow_c + home.emitters.header_k();
-        self.machine.machine.greatest_output_kw(&cold, flow_c) - load_kw - self.water_kw
+        let (_, greatest_kw) = output_range_kw(
+            self.system,
+            self.machine,
+            self.indoor_c,
+            outdoor_c,
+            &self.ground,
+        );
+        greatest_kw - load_kw(self.system, self.indoor_c, outdoor_c) - self.water_kw
     }
+}
+
+/// The steady loss without gains, kW.
+fn load_kw(system: &System, indoor_c: f64, outdoor_c: f64) -> f64 {
+    let fabric = &system.home.fabric;
+    fabric.design_load_kw(indoor_c, outdoor_c).max(0.0)
+}
+
+/// Least output without going on and off and greatest output, kW, at an outdoor temperature and the flow temperature that
+/// the emitters need for the steady loss there; ground and water at their coldest.
+pub fn output_range_kw(
+    system: &System,
+    machine: &MachineSystem,
+    indoor_c: f64,
+    outdoor_c: f64,
+    ground: &Memory,
+) -> (f64, f64) {
+    let emitters = &system.home.emitters;
+    let load_kw = load_kw(system, indoor_c, outdoor_c);
+    let cold = cold_side(machine, outdoor_c, ground);
+    let flow_c = emitters.at_load(load_kw, indoor_c).flow_c + emitters.header_k();
+    let greatest_kw = machine.machine.greatest_output_kw(&cold, flow_c);
+    let least_kw = machine.machine.least_output_kw(&cold, flow_c);
+    (least_kw.min(greatest_kw), greatest_kw)
 }
 
 impl CostFunction for Surplus<'_> {

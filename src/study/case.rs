@@ -5,10 +5,13 @@ use std::sync::Arc;
 use chrono_tz::Tz;
 
 use super::ageing::Aged;
+use super::fuel_carbon::{Both, CarbonOfFuel};
+use super::lever::Lever;
 use super::outcome::{Outcome, YearOutcome, price};
 use crate::bill::Connection;
 use crate::carbon::Leakage;
 use crate::home::Pattern;
+use crate::lifetime::{Outlay, Terms};
 use crate::plan::{Ability, ShiftRule};
 use crate::problem::Problems;
 use crate::source::Memory;
@@ -25,8 +28,20 @@ pub struct Case {
     pub time_zone: Tz,
     /// What everything is paid in.
     pub currency: Currency,
-    /// Today's system first, then the choices.
+    /// How the years of a system's life are counted.
+    pub terms: Terms,
+    /// Today's system first, then the choices, as they stand with all levers where they are.
     pub contenders: Vec<Contender>,
+    /// The levers that were moved, and the contenders before.
+    moved: Option<Moved>,
+}
+
+/// Levers that stand elsewhere than the brief put them.
+#[derive(Debug, Clone)]
+struct Moved {
+    before: Arc<[Contender]>,
+    /// Lever, choice and value, in the order of [`Lever::ALL`].
+    values: Vec<(Lever, usize, f64)>,
 }
 
 /// A tariff and the meter that counts under it over the axis.
@@ -60,7 +75,7 @@ pub struct Contender {
     /// Home and heating.
     pub system: System,
     /// Set points and signals.
-    pub plan: Plan,
+    pub plan: Arc<Plan>,
     /// Electricity.
     pub electricity: Account,
     /// The fuel it burns.
@@ -70,7 +85,7 @@ pub struct Contender {
     /// What the home uses and makes beside its heating.
     pub household: Arc<Household>,
     /// The plan without shifting, where the plan shifts.
-    pub unshifted: Option<Plan>,
+    pub unshifted: Option<Arc<Plan>>,
     /// How the hours are chosen, where the plan shifts.
     pub shift_rule: Option<ShiftRule>,
     /// What escapes of its refrigerant, where that is counted.
@@ -89,6 +104,8 @@ pub struct Contender {
     pub capital: Option<f64>,
     /// The same part by part, where it is given so.
     pub capital_parts: Vec<(String, f64)>,
+    /// What it costs to put in and to keep, in the case's currency, as far as it is known.
+    pub outlay: Option<Outlay>,
     /// Year of a buried loop's life that is shown, from 1.
     pub shown_year: u32,
     /// The ground at the beginning of that year, see [`Case::age_grounds`]; nothing for fresh ground or none.
@@ -96,6 +113,111 @@ pub struct Contender {
 }
 
 impl Case {
+    /// A case with every lever where the brief put it; today's system first.
+    pub fn new(
+        site: Arc<Site>,
+        time_zone: Tz,
+        currency: Currency,
+        terms: Terms,
+        contenders: Vec<Contender>,
+    ) -> Self {
+        Self {
+            site,
+            time_zone,
+            currency,
+            terms,
+            contenders,
+            moved: None,
+        }
+    }
+
+    /// The same case with today's system and one choice only, which becomes choice 1; nothing where there is no such choice.
+    pub fn pair(&self, choice: usize) -> Option<Self> {
+        let contenders = vec![
+            self.contenders.first()?.clone(),
+            self.contenders
+                .get(choice)
+                .filter(|contender| !contender.today)?
+                .clone(),
+        ];
+        Some(Self {
+            contenders,
+            moved: None,
+            ..self.clone()
+        })
+    }
+
+    /// Where a lever was moved to for a choice; nothing where it stands as the brief put it.
+    pub(super) fn moved_to(&self, lever: Lever, choice: usize) -> Option<f64> {
+        let values = &self.moved.as_ref()?.values;
+        let own = values
+            .iter()
+            .find(|(moved, of, _)| *moved == lever && *of == choice);
+        own.map(|(_, _, value)| *value)
+    }
+
+    /// Moves levers of a choice, each of them wherever it stood before.
+    ///
+    /// The contenders are made anew from those of the brief with every lever that now stands elsewhere, in one fixed
+    /// order: the way to a setting does not matter, and a lever moved back leaves the case as it was, bit for bit.
+    ///
+    /// # Errors
+    /// A value that the lever cannot take; the case is then as it was.
+    pub fn apply(&mut self, choice: usize, moves: &[(Lever, f64)]) -> Result<(), Problems> {
+        let before = match &self.moved {
+            Some(moved) => Arc::clone(&moved.before),
+            None => self.contenders.clone().into(),
+        };
+        let brief = Self {
+            contenders: before.to_vec(),
+            moved: None,
+            ..self.clone()
+        };
+        let mut values = self
+            .moved
+            .take()
+            .map_or_else(Vec::new, |moved| moved.values);
+        let kept = values.clone();
+        let mut problems = Problems::new();
+        for &(lever, value) in moves {
+            problems.take(lever.check(value, &brief, choice));
+            values.retain(|(moved, of, _)| (*moved, *of) != (lever, choice));
+            if lever.now(&brief, choice) != Some(value) {
+                values.push((lever, choice, value));
+            }
+        }
+        if let Err(problems) = problems.or(()) {
+            self.moved = (!kept.is_empty()).then_some(Moved {
+                before,
+                values: kept,
+            });
+            return Err(problems);
+        }
+        values.sort_by_key(|(lever, of, _)| (lever.order(), *of));
+        let hours = self.site.outdoor_c.len();
+        let mut contenders = before.to_vec();
+        for &(lever, of, value) in &values {
+            if let Err(problems) = lever.act(value, &mut contenders, of, hours) {
+                self.moved = (!kept.is_empty()).then_some(Moved {
+                    before,
+                    values: kept,
+                });
+                return Err(problems);
+            }
+        }
+        // Another loop has another past; otherwise the past is scaled when the year is run.
+        for (_, of, _) in values
+            .iter()
+            .filter(|(lever, _, _)| *lever == Lever::LoopLength)
+        {
+            let year = contenders[*of].shown_year;
+            contenders[*of].aged = brief.aged(&contenders[*of], year);
+        }
+        self.contenders = contenders;
+        self.moved = (!values.is_empty()).then_some(Moved { before, values });
+        Ok(())
+    }
+
     /// Runs every system through every year of the weather.
     ///
     /// # Errors
@@ -188,9 +310,11 @@ impl Case {
         let mut years = Vec::with_capacity(site.years.len());
         for (year, hours) in &site.years {
             let mut totals = Totals::new(&site.month0);
-            let mut sink = (&mut totals, &mut metered, ledger.as_deref_mut());
+            let mut fuel_carbon = CarbonOfFuel::new(&site.month0, plan.fuel.as_ref());
+            let mut meters = Both(&mut metered, &mut fuel_carbon);
+            let mut sink = (&mut totals, &mut meters, ledger.as_deref_mut());
             run(site, system, plan, hours.clone(), &mut state, &mut sink);
-            years.push(YearOutcome::new(*year, &totals));
+            years.push(YearOutcome::new(*year, &totals, fuel_carbon.months));
         }
         let Metered {
             electricity, fuel, ..

@@ -160,7 +160,7 @@ fn one_year(
             state,
             &mut Unwatched,
         );
-        let brine = brine_hour(machine, hour, &row);
+        let brine = brine_hour(machine, &row);
         let wall_c = match &machine.source {
             Source::Buried(buried) => Some(buried.wall_c(hour, &state.ground)),
             _ => None,
@@ -172,12 +172,13 @@ fn one_year(
 }
 
 /// The brine of an hour in which the machine ran.
-fn brine_hour(machine: &MachineSystem, hour: usize, row: &Row) -> Option<BrineHour> {
+fn brine_hour(machine: &MachineSystem, row: &Row) -> Option<BrineHour> {
     let entering_c = row.source_c?;
     let draw_kw = row.extracted_kwh / row.running_hours;
     let leaving_c = match &machine.source {
         Source::Buried(buried) => entering_c - draw_kw / buried.circuit.capacity_kw_per_k(),
-        Source::Water(water) => water.leaving_c(hour, draw_kw),
+        // Behind an exchanger the machine's own circuit is taken to flow as the water does.
+        Source::Water(water) => entering_c - water.cooling_k(draw_kw),
         Source::OutdoorAir | Source::Ground(_) => f64::NAN,
     };
     Some(BrineHour {

@@ -7,6 +7,7 @@ use rust_decimal::prelude::ToPrimitive;
 
 use super::case::{Account, Beside, Contender};
 use crate::bill::{Bill, price_reading};
+use crate::lifetime::Running;
 use crate::problem::Problems;
 use crate::tariff::Reading;
 use crate::units::Fuel;
@@ -23,6 +24,18 @@ pub struct Costs {
     pub standing: f64,
     /// Tax that is added; nothing where every rate holds it already.
     pub tax: Option<f64>,
+    /// Of the total, what the electricity bill comes to, tax included.
+    pub electricity: f64,
+    /// Of the total, what the fuel bill comes to, tax included.
+    pub fuel: f64,
+    /// Of the electricity bill, the energy before tax that is added.
+    pub electricity_energy: f64,
+    /// Of the electricity bill, standing and demand charges before tax that is added.
+    pub electricity_standing: f64,
+    /// Of the fuel bill, the energy before tax that is added.
+    pub fuel_energy: f64,
+    /// Of the fuel bill, standing and demand charges before tax that is added.
+    pub fuel_standing: f64,
     /// Total of each civil month.
     pub months: [f64; 12],
     /// Total of each year of the weather.
@@ -40,6 +53,8 @@ pub struct YearOutcome {
     pub months: [Sums; 12],
     /// Sums of the year.
     pub sums: Sums,
+    /// Of the carbon, that of the fuel by civil month, kg CO2e.
+    pub fuel_carbon_kg: [f64; 12],
     /// Lowest indoor temperature, °C.
     pub min_indoor_c: f64,
     /// Greatest hourly mean of electric power, kW.
@@ -57,12 +72,13 @@ pub struct YearOutcome {
 }
 
 impl YearOutcome {
-    pub(super) fn new(year: i32, totals: &Totals<'_>) -> Self {
+    pub(super) fn new(year: i32, totals: &Totals<'_>, fuel_carbon_kg: [f64; 12]) -> Self {
         Self {
             year,
             hours: totals.hours,
             months: totals.months,
             sums: totals.all(),
+            fuel_carbon_kg,
             min_indoor_c: totals.min_indoor_c,
             peak_electric_kw: totals.peak_electric_kw,
             hours_backup: totals.hours_backup,
@@ -91,6 +107,37 @@ impl Outcome {
     /// Mean of a figure over the years.
     pub fn mean(&self, figure: impl Fn(&YearOutcome) -> f64) -> f64 {
         self.years.iter().map(figure).sum::<f64>() / self.years.len() as f64
+    }
+
+    /// Carbon of a mean year, kg CO2e.
+    pub fn carbon_kg(&self) -> f64 {
+        self.mean(|year| year.sums.carbon_kg)
+    }
+
+    /// What it uses in a mean year, for the years of its life. Heat is that to the rooms and at the taps, which is the same for
+    /// every system of a home.
+    pub fn running(&self) -> Running {
+        let fuel_carbon_kg = self.mean(|year| year.fuel_carbon_kg.iter().sum());
+        Running {
+            electricity: self.costs.electricity,
+            fuel: self.costs.fuel,
+            electricity_carbon_kg: self.carbon_kg() - fuel_carbon_kg,
+            fuel_carbon_kg,
+            heat_kwh: self.mean(|year| year.sums.space_heat_kwh() + year.sums.water_drawn_kwh),
+        }
+    }
+
+    /// The same years with the carbon of electricity multiplied.
+    pub(super) fn with_electricity_carbon_times(mut self, factor: f64) -> Self {
+        for year in &mut self.years {
+            let fuels = year.fuel_carbon_kg;
+            for (month, fuel) in year.months.iter_mut().zip(fuels) {
+                month.carbon_kg = (month.carbon_kg - fuel) * factor + fuel;
+            }
+            let fuel: f64 = fuels.iter().sum();
+            year.sums.carbon_kg = (year.sums.carbon_kg - fuel) * factor + fuel;
+        }
+        self
     }
 
     /// Sums of a mean year.
@@ -126,16 +173,32 @@ pub(super) fn price(
         by_year: vec![0.0; years.len()],
         ..Costs::default()
     };
-    add(
-        &mut costs,
-        years,
-        &bill(contender, &contender.electricity, electricity)?,
-    );
+    let count = years.len() as f64;
+    let electricity = bill(contender, &contender.electricity, electricity)?;
+    costs.electricity = number(electricity.total()) / count;
+    costs.electricity_energy = energy(&electricity) / count;
+    costs.electricity_standing = standing(&electricity) / count;
+    add(&mut costs, years, &electricity);
     if let (Some(account), Some(reading)) = (&contender.fuel, fuel) {
-        add(&mut costs, years, &bill(contender, account, reading)?);
+        let fuel = bill(contender, account, reading)?;
+        costs.fuel = number(fuel.total()) / count;
+        costs.fuel_energy = energy(&fuel) / count;
+        costs.fuel_standing = standing(&fuel) / count;
+        add(&mut costs, years, &fuel);
     }
     for Beside { account, reading } in &contender.beside {
-        add(&mut costs, years, &bill(contender, account, reading)?);
+        let bill = bill(contender, account, reading)?;
+        let share = if account.tariff.fuel == Fuel::Electricity {
+            costs.electricity_energy += energy(&bill) / count;
+            costs.electricity_standing += standing(&bill) / count;
+            &mut costs.electricity
+        } else {
+            costs.fuel_energy += energy(&bill) / count;
+            costs.fuel_standing += standing(&bill) / count;
+            &mut costs.fuel
+        };
+        *share += number(bill.total()) / count;
+        add(&mut costs, years, &bill);
     }
     Ok(costs)
 }
@@ -193,11 +256,20 @@ fn number(amount: Decimal) -> f64 {
     amount.to_f64().unwrap_or(f64::NAN)
 }
 
+/// Energy less what is paid for energy fed back.
+fn energy(bill: &Bill) -> f64 {
+    number(bill.energy() + bill.export().unwrap_or_default())
+}
+
+fn standing(bill: &Bill) -> f64 {
+    number(bill.standing() + bill.demand())
+}
+
 fn add(costs: &mut Costs, years: &[(i32, Range<usize>)], bill: &Bill) {
     let count = years.len() as f64;
     costs.total += number(bill.total()) / count;
-    costs.energy += number(bill.energy() + bill.export().unwrap_or_default()) / count;
-    costs.standing += number(bill.standing() + bill.demand()) / count;
+    costs.energy += energy(bill) / count;
+    costs.standing += standing(bill) / count;
     if let Some(tax) = bill.tax() {
         *costs.tax.get_or_insert(0.0) += number(tax) / count;
     }

@@ -23,7 +23,7 @@ pub fn under_pattern(
         contender.plan.fuel.clone(),
     );
     let mut other = Contender {
-        plan,
+        plan: plan.into(),
         pattern: pattern.clone(),
         ..contender.clone()
     };

@@ -1,5 +1,7 @@
 //! What shifting saves, and what it costs in performance and comfort.
 
+use std::sync::Arc;
+
 use super::case::{Case, Contender};
 use super::outcome::Outcome;
 use crate::problem::Problems;
@@ -43,7 +45,7 @@ pub fn against_unshifted(case: &Case, contender: &Contender) -> Result<Option<Sh
         return Ok(None);
     };
     let unshifted = Contender {
-        plan: plan.clone(),
+        plan: Arc::clone(plan),
         unshifted: None,
         shift_rule: None,
         ..contender.clone()

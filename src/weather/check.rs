@@ -1,7 +1,8 @@
 //! Checks of the hourly temperatures that need no standard: spikes, stuck sensors, clock artefacts, whole years.
 
-use chrono::{DateTime, Datelike, Timelike, Weekday};
+use chrono::DateTime;
 
+use super::clock_change;
 use super::hours::Hours;
 use super::words::count;
 use super::zone::{Zone, local_hours};
@@ -88,10 +89,7 @@ pub(super) fn clock_artefacts(hours: &Hours, findings: &mut Vec<Finding>) {
         else {
             continue;
         };
-        let local = hours.zone.local(instant);
-        // Clocks go forward on a Sunday of March or April in the north, of September or October in the south.
-        let season = matches!(local.month(), 3 | 4 | 9 | 10);
-        if season && local.weekday() == Weekday::Sun && local.hour() <= 3 {
+        if clock_change::could_be(hours.zone.local(instant)) {
             findings.push(
                 Finding::new(
                     Severity::Warning,

@@ -224,6 +224,7 @@ fn place_rows(
         line: &rows.line,
         begin_s: &instants.begin_s,
         zone: instants.zone,
+        zone_known: instants.zone_known,
     };
     let order = times.sorted(findings);
     let (Some(&first), Some(&last)) = (order.first(), order.last()) else {
@@ -338,8 +339,8 @@ fn join(values: &mut [f64], reach: usize) {
             && i - from <= reach
         {
             let (a, b) = (values[from], values[i]);
-            for k in from + 1..i {
-                values[k] = a + (b - a) * (k - from) as f64 / (i - from) as f64;
+            for (k, value) in values[from + 1..i].iter_mut().enumerate() {
+                *value = a + (b - a) * (k + 1) as f64 / (i - from) as f64;
             }
         }
         before = Some(i);

@@ -1,14 +1,15 @@
 //! Hourly weather: read, check, repair, describe.
 //!
-//! A file goes through the rooms of this folder in one direction: [`bytes`] makes text of it, [`layout`] finds the
-//! columns, [`rows`] reads the numbers, [`values`] puts them in physical units, [`clock`] turns stamps into instants,
-//! [`hours`] makes hours of them, [`check`] and [`repair`] see to faults and gaps. What comes out is a complete
+//! A file goes through the rooms of this folder in one direction: `bytes` makes text of it, `layout` finds the
+//! columns, `rows` reads the numbers, `values` puts them in physical units, `clock` turns stamps into instants,
+//! `hours` makes hours of them, `check` and `repair` see to faults and gaps. What comes out is a complete
 //! [`Weather`]; every oddity met on the way is a finding with its line.
 
 mod adjust;
 mod bytes;
 mod check;
 mod clock;
+mod clock_change;
 mod columns;
 mod date_form;
 mod degree_days;
@@ -18,7 +19,9 @@ mod faults;
 mod heading;
 mod hours;
 mod humidity;
+mod iso_stamp;
 mod layout;
+mod nominal_year;
 mod number;
 mod options;
 mod order;
@@ -27,6 +30,8 @@ mod read;
 mod repair;
 mod row_reader;
 mod rows;
+mod temperature;
+mod time_of_day;
 mod time_stamp;
 mod typical_year;
 mod values;

@@ -3,6 +3,7 @@
 use chrono::DateTime;
 
 use super::clock::ASIDE;
+use super::clock_change;
 use super::hours::local;
 use super::words::count;
 use super::zone::Zone;
@@ -19,6 +20,7 @@ pub(super) struct Times<'a> {
     pub line: &'a [u32],
     pub begin_s: &'a [i64],
     pub zone: Zone,
+    pub zone_known: bool,
 }
 
 impl Times<'_> {
@@ -162,10 +164,13 @@ impl Times<'_> {
             let again = clash
                 .or_else(|| group.iter().copied().find(|&row| row != keep))
                 .unwrap_or(keep);
-            findings.push(
-                Finding::new(severity, what, format!("line {} is kept", self.line(keep)))
-                    .at(&self.place_of(again)),
-            );
+            let mut done = format!("line {} is kept", self.line(keep));
+            let local =
+                DateTime::from_timestamp(self.at(keep), 0).map(|instant| self.zone.local(instant));
+            if !self.zone_known && local.is_some_and(clock_change::could_be) {
+                done += "; do clocks go back here? declare the zone";
+            }
+            findings.push(Finding::new(severity, what, done).at(&self.place_of(again)));
         }
         (kept, doubled)
     }

@@ -135,8 +135,8 @@ fn fill(values: &mut [f64], gaps: &[(usize, usize)], policy: RepairPolicy) {
     for &(from, to) in gaps {
         if by_line(&before, from, to, policy) {
             let (a, b) = (before[from - 1], before[to]);
-            for i in from..to {
-                values[i] = a + (b - a) * (i - from + 1) as f64 / (to - from + 1) as f64;
+            for (k, value) in values[from..to].iter_mut().enumerate() {
+                *value = a + (b - a) * (k + 1) as f64 / (to - from + 1) as f64;
             }
             continue;
         }

@@ -4,6 +4,9 @@
 
 use chrono::NaiveDate;
 
+use super::iso_stamp::iso;
+use super::time_of_day::{Clock, clock, number};
+
 /// Seconds in a day.
 const DAY_S: i64 = 86_400;
 /// Days from the start of the common era to 1970-01-01.
@@ -85,45 +88,6 @@ pub(super) fn stamp(text: &[u8], form: DateForm) -> Option<Stamp> {
     }
 }
 
-/// The commonest form, `2024-01-31 07:30` or with seconds, read at fixed places; anything else is left to the general way.
-fn iso(text: &[u8]) -> Option<i64> {
-    let minutes: &[u8; 16] = text.get(..16)?.try_into().ok()?;
-    let [y1, y2, y3, y4, s1, m1, m2, s2, d1, d2, t, h1, h2, c, n1, n2] = *minutes;
-    let second = match text[16..] {
-        [] => 0,
-        [b':', a, b] => two(a, b)?,
-        _ => return None,
-    };
-    let (month, day) = (two(m1, m2)?, two(d1, d2)?);
-    let year = two(y1, y2)? * 100 + two(y3, y4)?;
-    let (hour, minute) = (two(h1, h2)?, two(n1, n2)?);
-    let separated = matches!(s1, b'-' | b'/') && s1 == s2 && matches!(t, b'T' | b' ') && c == b':';
-    // Only days that every month has: the others are looked up in the calendar.
-    let plain = separated
-        && (1..=12).contains(&month)
-        && (1..=28).contains(&day)
-        && (1800..=2200).contains(&year)
-        && hour < 24
-        && minute < 60
-        && second < 60;
-    plain.then(|| {
-        let days = days_before(i64::from(year), i64::from(month), i64::from(day));
-        days * DAY_S + i64::from(hour * 3600 + minute * 60 + second)
-    })
-}
-
-fn two(a: u8, b: u8) -> Option<u32> {
-    let (a, b) = (a.wrapping_sub(b'0'), b.wrapping_sub(b'0'));
-    (a < 10 && b < 10).then(|| u32::from(a) * 10 + u32::from(b))
-}
-
-/// Days from 1970-01-01 to a date of the Gregorian calendar after year 0, counted in years that begin in March.
-fn days_before(year: i64, month: i64, day: i64) -> i64 {
-    let year = if month <= 2 { year - 1 } else { year };
-    let of_year = (153 * ((month + 9) % 12) + 2) / 5 + day - 1;
-    year * 365 + year / 4 - year / 100 + year / 400 + of_year - 719_468
-}
-
 /// Reads a date and a time of day from two fields.
 pub(super) fn stamp_of_two(date: &[u8], time: &[u8], form: DateForm) -> Option<Stamp> {
     let (day_s, rest) = date_prefix(date.trim_ascii(), form)?;
@@ -161,14 +125,6 @@ pub(super) fn stamp_of_parts(
         offset_s: None,
         twenty_four: hour == 24,
     })
-}
-
-/// A time of day.
-#[derive(Debug, Clone, Copy, Default)]
-struct Clock {
-    seconds: i64,
-    offset_s: Option<i32>,
-    twenty_four: bool,
 }
 
 fn at(day_s: i64, clock: Clock) -> Stamp {
@@ -300,112 +256,6 @@ fn separator(text: &[u8]) -> Option<&[u8]> {
     }
 }
 
-/// Reads a time of day: `07:30`, `7.30`, `0730`, `07`, `07:30:15.5 PM`, `24:00`, `07:30Z`, `07:30+01:00`.
-fn clock(text: &[u8]) -> Option<Clock> {
-    let (mut hour, rest) = number(text, 6)?;
-    let digits = text.len() - rest.len();
-    let (mut minute, mut second, mut rest) = (0, 0, rest);
-    match digits {
-        1 | 2 => {
-            if let Some(after) = after_colon(rest) {
-                (minute, rest) = two_digits(after)?;
-                if let Some(after) = after_colon(rest) {
-                    (second, rest) = two_digits(after)?;
-                    if let [b'.' | b',', fraction @ ..] = rest {
-                        let digits = fraction.iter().take_while(|b| b.is_ascii_digit()).count();
-                        rest = &fraction[digits..];
-                    }
-                }
-            }
-        }
-        3 | 4 => (hour, minute) = (hour / 100, hour % 100),
-        6 => (hour, minute, second) = (hour / 10_000, hour / 100 % 100, hour % 100),
-        _ => return None,
-    }
-    rest = rest.trim_ascii_start();
-    if let [a, b'M' | b'm', after @ ..] = rest
-        && matches!(a, b'A' | b'a' | b'P' | b'p')
-    {
-        if !(1..=12).contains(&hour) {
-            return None;
-        }
-        let afternoon = matches!(a, b'P' | b'p');
-        hour = hour % 12 + if afternoon { 12 } else { 0 };
-        rest = after.trim_ascii_start();
-    }
-    let offset_s = offset(rest)?;
-    let within = hour < 24 || (hour == 24 && minute == 0 && second == 0);
-    // Second 60 is a leap second; it is read as the end of its minute.
-    if !within || minute > 59 || second > 60 {
-        return None;
-    }
-    Some(Clock {
-        seconds: hour * 3600 + minute * 60 + second,
-        offset_s,
-        twenty_four: hour == 24,
-    })
-}
-
-fn after_colon(text: &[u8]) -> Option<&[u8]> {
-    match text.first()? {
-        b':' | b'.' | b'h' => Some(&text[1..]),
-        _ => None,
-    }
-}
-
-/// Reads the offset that ends a stamp; the outer nothing means that what stands there is no offset.
-fn offset(text: &[u8]) -> Option<Option<i32>> {
-    let east = match text {
-        [] => return Some(None),
-        b"Z" | b"z" | b"UTC" | b"GMT" => return Some(Some(0)),
-        [b'+', ..] => 1,
-        [b'-', ..] => -1,
-        _ => return None,
-    };
-    let (number, rest) = number(&text[1..], 4)?;
-    let digits = text.len() - 1 - rest.len();
-    let (hours, minutes) = match (digits, rest) {
-        (1 | 2, []) => (number, 0),
-        (4, []) => (number / 100, number % 100),
-        (1 | 2, [b':', rest @ ..]) => {
-            let (minutes, rest) = two_digits(rest)?;
-            if !rest.is_empty() {
-                return None;
-            }
-            (number, minutes)
-        }
-        _ => return None,
-    };
-    if hours > 14 || minutes > 59 {
-        return None;
-    }
-    Some(Some(
-        east * i32::try_from(hours * 3600 + minutes * 60).ok()?,
-    ))
-}
-
-fn two_digits(text: &[u8]) -> Option<(i64, &[u8])> {
-    let (number, rest) = number(text, 2)?;
-    Some((number, rest))
-}
-
-/// Reads up to `most` digits; more digits than that are not a number here.
-fn number(text: &[u8], most: usize) -> Option<(i64, &[u8])> {
-    let mut value: i64 = 0;
-    let mut digits = 0;
-    for &byte in text {
-        if !byte.is_ascii_digit() {
-            break;
-        }
-        digits += 1;
-        if digits > most {
-            return None;
-        }
-        value = value * 10 + i64::from(byte - b'0');
-    }
-    (digits > 0).then(|| (value, &text[digits..]))
-}
-
 /// Reads a number, or an English month name as its number with no digits.
 fn number_or_month(text: &[u8]) -> Option<(i64, usize, &[u8])> {
     if let Some((value, rest)) = number(text, 4) {
@@ -474,21 +324,6 @@ mod tests {
         assert_eq!(two.map(|s| s.local_s), Some(moment));
         let parts = stamp_of_parts(2024, 1, 31, 7, 30);
         assert_eq!(parts.map(|s| s.local_s), Some(moment));
-    }
-
-    proptest! {
-        /// The short way is chrono's calendar.
-        #[test]
-        fn the_short_way_counts_as_the_calendar_does(day in 0i64..146_000, minute in 0i64..1440) {
-            let seconds = day * DAY_S + minute * 60 - 50 * 365 * DAY_S;
-            let text = chrono::DateTime::from_timestamp(seconds, 0).unwrap().format("%Y-%m-%d %H:%M").to_string();
-            if let Some(short) = iso(text.as_bytes()) {
-                prop_assert_eq!(short, seconds);
-            } else {
-                prop_assert!(text[8..10].parse::<u32>().unwrap() > 28 || !(1800..=2200).contains(&text[..4].parse().unwrap()));
-            }
-            prop_assert_eq!(stamp(text.as_bytes(), DateForm::YearFirst).map(|s| s.local_s).unwrap_or(seconds), seconds);
-        }
     }
 
     #[test]

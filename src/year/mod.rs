@@ -1,7 +1,7 @@
 //! The hours: one step, one run, the ledger row, sinks.
 //!
 //! [`run`] takes a [`Site`] (what the weather and the clock give to every system), a [`System`] (home and heating), a
-//! [`Plan`] (set points and signals hour by hour) and a [`State`] (what carries over from hour to hour), calls [`step`] for
+//! [`Plan`] (set points and signals hour by hour) and a [`State`] (what carries over from hour to hour), calls [`step()`] for
 //! each hour, and hands each [`Row`] to a [`Sink`]. A run can be stopped and resumed at any hour: two half years with
 //! the state carried over are the year.
 

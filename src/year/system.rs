@@ -65,9 +65,9 @@ impl Heating {
         }
     }
 
-    /// Whether prices decide what runs, so that another price makes another year.
-    pub fn follows_prices(&self) -> bool {
-        matches!(self, Self::Hybrid(hybrid) if hybrid.rule.follows_prices())
+    /// Whether prices or carbon decide what runs, so that another price makes another year.
+    pub fn follows_signals(&self) -> bool {
+        matches!(self, Self::Hybrid(hybrid) if hybrid.rule.follows_signals())
     }
 }
 

@@ -3,11 +3,14 @@
 //! Checked for each: labels stay on the canvas and touch no other label, the SVG is well-formed XML with title,
 //! description and fonts, the PNG has the size promised, the alt text says something. The PNG and SVG files are left
 //! in the test's folder under `target/tmp/gallery` to be looked at.
+#![cfg(test)]
 
 #[cfg(test)]
 mod annual_cost;
 #[cfg(test)]
 mod common;
+#[cfg(test)]
+mod flows;
 #[cfg(test)]
 mod hours;
 #[cfg(test)]

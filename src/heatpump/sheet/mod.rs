@@ -76,6 +76,11 @@ pub struct Assumed {
 }
 
 impl Sheet {
+    /// JSON Schema of a sheet.
+    pub fn schema() -> schemars::Schema {
+        Document::<RawSheet>::schema()
+    }
+
     /// Reads a sheet from a file.
     ///
     /// # Errors

@@ -25,6 +25,11 @@ use pricing::Pricing;
 const DOCUMENT: std::ops::Range<usize> = 0..0;
 
 impl Tariff {
+    /// JSON Schema of a tariff file.
+    pub fn schema() -> schemars::Schema {
+        Document::<TariffFields>::schema()
+    }
+
     /// Reads a tariff file.
     ///
     /// # Errors

@@ -88,6 +88,8 @@ def main():
     put("out_of_order.csv", good[:10] + good[20:25] + good[10:20] + good[25:])
     spring = [r for r in rows(times(48, datetime(2023, 3, 25)), "%Y-%m-%d %H:%M") if " 02:00" not in r or "-25" in r]
     put("clock_forward.csv", [HEADING] + spring)
+    autumn = rows(times(48, datetime(2023, 10, 28)), "%Y-%m-%d %H:%M")
+    put("clock_back.csv", [HEADING] + autumn[:26] + ["2023-10-29 01:00,4.0"] + autumn[26:])
     put("no_time_zone.csv", ["time,temperature (°C)"] + rows(form="%Y-%m-%d %H:%M"))
     put("twenty_four.csv", ["time,temperature (°C)"] + [
         f"2023-01-01 {h:02}:00,{warmth(datetime(2023, 1, 1, h % 24)):.1f}" for h in range(1, 25)

@@ -1,0 +1,175 @@
+//! How each lever acts on the contenders of a case.
+
+use std::sync::Arc;
+
+use super::case::{Account, Contender};
+use super::lever::{Again, Lever};
+use crate::problem::{Place, Problem, Problems};
+use crate::source::Source;
+use crate::units::Fuel;
+use crate::year::{Plan, Signal};
+
+impl Lever {
+    /// Acts on contenders that stand as the brief put them. What belongs to the home or the supply moves for every system, what
+    /// belongs to a choice for that choice alone. The value has been checked; `hours` are those of the axis.
+    ///
+    /// # Errors
+    /// A loop of another length whose response cannot be made.
+    pub(super) fn act(
+        self,
+        value: f64,
+        contenders: &mut [Contender],
+        choice: usize,
+        hours: usize,
+    ) -> Result<(), Problems> {
+        // Bills and carbon draw nothing from the ground.
+        if self.again() == Again::Everyone {
+            contenders.iter_mut().for_each(Contender::moved);
+        }
+        match self {
+            Self::ElectricityRate => {
+                for contender in contenders {
+                    contender.electricity = scaled(&contender.electricity, value);
+                    for beside in &mut contender.beside {
+                        if beside.account.tariff.fuel == Fuel::Electricity {
+                            beside.account = scaled(&beside.account, value);
+                        }
+                    }
+                    times(&mut plan(contender).electricity.price, value);
+                }
+            }
+            Self::FuelRate => {
+                for contender in contenders {
+                    contender.fuel = contender.fuel.as_ref().map(|fuel| scaled(fuel, value));
+                    if let Some(Signal { price, .. }) = &mut plan(contender).fuel {
+                        times(price, value);
+                    }
+                }
+            }
+            Self::ElectricityCarbon => {
+                for contender in contenders {
+                    times(&mut plan(contender).electricity.carbon_kg, value);
+                }
+            }
+            Self::HeatLoss => {
+                for contender in contenders {
+                    let fabric = &mut contender.system.home.fabric;
+                    *fabric = fabric.with_heat_loss(fabric.heat_loss_w_per_k() * value);
+                }
+            }
+            Self::HotWater => {
+                for contender in contenders {
+                    if let Some(water) = &mut contender.system.home.hot_water {
+                        times(&mut water.daily_kwh, value);
+                    }
+                }
+            }
+            Self::Indoor => {
+                let warmer_k = contenders
+                    .get(choice)
+                    .map_or(0.0, |contender| value - contender.indoor_c);
+                for contender in contenders {
+                    contender.indoor_c += warmer_k;
+                    let pattern = &mut contender.pattern;
+                    for set_point_c in pattern.weekday_c.iter_mut().chain(&mut pattern.weekend_c) {
+                        *set_point_c += warmer_k;
+                    }
+                    let plan = plan(contender);
+                    plan.comfort_c += warmer_k;
+                    for target_c in plan
+                        .recovery
+                        .iter_mut()
+                        .flat_map(|ahead| &mut ahead.target_c)
+                    {
+                        *target_c += warmer_k;
+                    }
+                    let asked_c = plan.asked_c.iter_mut().flatten();
+                    let set_points_c = plan.set_point_c.iter_mut().chain(&mut plan.backup_below_c);
+                    for set_point_c in set_points_c.chain(asked_c) {
+                        *set_point_c += warmer_k;
+                    }
+                }
+            }
+            Self::FlowTemperature
+            | Self::RatedOutput
+            | Self::FieldFactor
+            | Self::LoopResistance
+            | Self::LoopLength
+            | Self::Capital
+            | Self::Grant => {
+                if let Some(contender) = contenders.get_mut(choice) {
+                    if self.again() == Again::Choice {
+                        contender.moved();
+                    }
+                    self.act_on(value, contender, hours)?;
+                }
+            }
+        }
+        Ok(())
+    }
+
+    /// Acts on one choice.
+    fn act_on(self, value: f64, contender: &mut Contender, hours: usize) -> Result<(), Problems> {
+        match (self, contender.system.heating.machine_mut()) {
+            (Self::FlowTemperature, _) => {
+                let emitters = &mut contender.system.home.emitters;
+                *emitters = emitters.with_design_flow(value, contender.indoor_c);
+            }
+            (Self::RatedOutput, Some(system)) => {
+                system.machine = system.machine.scaled_to(value);
+            }
+            (Self::FieldFactor, Some(system)) => {
+                system.machine = system.machine.with_field_factor(value);
+            }
+            (Self::LoopResistance, Some(system)) => {
+                if let Source::Ground(ground) = &mut system.source {
+                    ground.resistance_k_per_kw *= value;
+                }
+            }
+            (Self::LoopLength, Some(system)) => {
+                if let Source::Buried(buried) = &mut system.source {
+                    let built = buried.design.with_length(value).build(hours);
+                    **buried = built.map_err(|error| {
+                        let place = Place::field(self.name());
+                        Problem::new(
+                            place,
+                            format!("a loop of {value:.0} m: {}", error.why),
+                            "a loop whose response can be made",
+                            "give another length",
+                        )
+                    })?;
+                }
+            }
+            (Self::Capital, _) => {
+                contender.outlay = contender
+                    .outlay
+                    .as_ref()
+                    .map(|outlay| outlay.with_capital(value));
+            }
+            (Self::Grant, _) => {
+                if let Some(outlay) = &mut contender.outlay {
+                    outlay.grant = value;
+                }
+            }
+            _ => {}
+        }
+        Ok(())
+    }
+}
+
+/// The plan, made the contender's own.
+fn plan(contender: &mut Contender) -> &mut Plan {
+    Arc::make_mut(&mut contender.plan)
+}
+
+fn times(column: &mut [f64], factor: f64) {
+    column.iter_mut().for_each(|value| *value *= factor);
+}
+
+/// The same account with every price of a kilowatt-hour multiplied; meters and readings do not depend on rates.
+fn scaled(account: &Account, factor: f64) -> Account {
+    Account {
+        tariff: Arc::new(account.tariff.with_energy_times(factor)),
+        ..account.clone()
+    }
+}

@@ -1,0 +1,63 @@
+//! How far a lever may be off where nobody has said better.
+
+use super::case::Case;
+use super::lever::Lever;
+use super::pair::CHOICE;
+
+/// From a low to a high value; beyond them is unlikely.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Spread {
+    /// Low value, in the unit of the lever.
+    pub low: f64,
+    /// High value.
+    pub high: f64,
+    /// Where it is from.
+    pub from: &'static str,
+}
+
+/// No source is known.
+const COMMON: &str = "common practice, no source";
+
+/// The usual spread of a lever of a pair about where it stands; nothing for a lever that is chosen rather than uncertain, or that
+/// the choice does not have.
+pub fn usual_spread(lever: Lever, case: &Case) -> Option<Spread> {
+    spread_of(lever, case, CHOICE)
+}
+
+/// The same for any choice of a case.
+pub(super) fn spread_of(lever: Lever, case: &Case, choice: usize) -> Option<Spread> {
+    let now = lever.now(case, choice)?;
+    let times = |low: f64, high: f64, from| Spread {
+        low: now * low,
+        high: now * high,
+        from,
+    };
+    let about = |low: f64, high: f64, from| Spread {
+        low: now + low,
+        high: now + high,
+        from,
+    };
+    let spread = match lever {
+        Lever::ElectricityRate | Lever::FuelRate => times(0.8, 1.25, COMMON),
+        Lever::HeatLoss => times(0.85, 1.2, COMMON),
+        Lever::FlowTemperature => about(-4.0, 4.0, COMMON),
+        Lever::Indoor => about(-1.0, 1.0, COMMON),
+        Lever::HotWater => times(0.6, 1.5, COMMON),
+        Lever::FieldFactor => times(
+            0.90,
+            1.11,
+            "quartiles 2.20 and 2.70 about 2.44 of the coldest-day COP in a UK trial of monitored homes (secondary source)",
+        ),
+        Lever::LoopResistance => times(0.75, 1.4, COMMON),
+        Lever::Capital => times(0.85, 1.2, COMMON),
+        Lever::ElectricityCarbon => times(0.7, 1.2, COMMON),
+        Lever::LoopLength | Lever::RatedOutput | Lever::Grant => return None,
+    };
+    let range = lever.range(case, choice)?;
+    let spread = Spread {
+        low: spread.low.max(range.low),
+        high: spread.high.min(range.high),
+        ..spread
+    };
+    (spread.low < spread.high).then_some(spread)
+}
