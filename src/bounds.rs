@@ -118,6 +118,16 @@ bounds! {
     DIFFUSIVITY_M2_PER_S = "thermal diffusivity", 1.0e-7 ..= 3.0e-6, "m²/s";
     /// How far a loop's brine falls per kilowatt drawn.
     LOOP_K_PER_KW = "loop resistance", 0.05 ..= 10.0, "K/kW";
+    /// How far shifting may move a temperature.
+    SHIFT_K = "latitude of shifting", 0.0 ..= 20.0, "K";
+    /// Outdoor temperature at which a hybrid changes over.
+    CHANGE_OVER_C = "change-over temperature", -30.0 ..= 20.0, "°C";
+    /// Electricity of a household in a year.
+    HOUSEHOLD_KWH = "household electricity in a year", 0.0 ..= 100000.0, "kWh";
+    /// Electricity used or made by a home in an hour.
+    HOURLY_KWH = "electricity in an hour", 0.0 ..= 100.0, "kWh";
+    /// Refrigerant in a machine.
+    REFRIGERANT_KG = "refrigerant charge", 0.05 ..= 20.0, "kg";
     /// Coordinate of a bore or a trench.
     GROUND_PLACE_M = "place on the plot", -1000.0 ..= 1000.0, "m";
     /// Length of a bore that takes heat.

@@ -46,10 +46,7 @@ fn site_of(outdoor_c: Vec<f64>) -> Site {
 }
 
 fn signal(hours: usize) -> Signal {
-    Signal {
-        price: vec![0.25; hours],
-        carbon_kg: vec![0.2; hours],
-    }
+    Signal::bought(vec![0.25; hours], vec![0.2; hours])
 }
 
 /// A home of 212 W/K heated electrically, so that nothing but the home shapes its demand.

@@ -2,6 +2,7 @@
 
 use std::collections::BTreeMap;
 
+use super::account::{bill_answers, meter_answers, shifting_answer, signal_gap};
 use super::bills::pair;
 use super::estimate::{
     Assumption, Estimate, GroundShown, HomeUsed, InputFile, MonthAnswer, SystemAnswer, WeatherUsed,
@@ -19,6 +20,7 @@ use crate::study::{
     BalancePoint, Case, Contender, DesignPoint, Lever, Measure, Outcome, Pair, balance_point,
     break_even, design_point, under_pattern,
 };
+use crate::units::Fuel;
 use crate::year::Heating;
 
 /// What an estimate tells beside the figures of its case.
@@ -57,6 +59,24 @@ pub struct BillsTold {
     pub scaled_by: Option<f64>,
 }
 
+/// Years over which refrigerant that escapes at the end of a machine's life is spread. Common practice, no source.
+const LEAKAGE_LIFE_YEARS: f64 = 15.0;
+
+impl Estimate {
+    /// The same estimate with the bills of every system.
+    ///
+    /// # Errors
+    /// When a reading cannot be priced.
+    pub fn with_bills(mut self, case: &Case, outcomes: &[Outcome]) -> Result<Self, Problems> {
+        for ((system, contender), outcome) in
+            self.systems.iter_mut().zip(&case.contenders).zip(outcomes)
+        {
+            system.bills = Some(bill_answers(contender, outcome)?);
+        }
+        Ok(self)
+    }
+}
+
 /// Makes the estimate.
 ///
 /// # Errors
@@ -81,6 +101,8 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
             system.pattern_heat_kwh = Some(system.space_heat_kwh - heat_kwh);
             system.pattern_cost = Some(system.cost - as_today.costs.total);
         }
+        system.shifting = shifting_answer(case, contender)?;
+        findings.extend(signal_gap(contender, outcome)?);
         findings.extend(shortfalls(&system));
         system.ground = ground_shown(case, contender, outcome)?;
         findings.extend(source_too_cold(&system));
@@ -142,25 +164,41 @@ fn system(
     machine: Option<String>,
 ) -> SystemAnswer {
     let sums = outcome.mean_sums();
-    let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
-    let burns_fuel = matches!(contender.system.heating, Heating::Boiler { .. });
+    let heating = &contender.system.heating;
+    let is_machine = heating.machine().is_some();
+    let burns_fuel = heating.boiler().is_some();
     let ground = contender
         .aged
         .map_or_else(Memory::default, |aged| aged.memory);
-    let balance = |with_hot_water| match &contender.system.heating {
-        Heating::HeatPump(machine) => balance_point(
+    let balance = |with_hot_water| {
+        let machine = heating.machine()?;
+        balance_point(
             &contender.system,
             machine,
             contender.indoor_c,
             with_hot_water,
             ground,
-        ),
-        _ => None,
+        )
     };
     let balance_points = (balance(false), balance(true));
     let today = &all[0];
     let compared = |mine: f64, todays: f64| (!contender.today).then_some(todays - mine);
     let costs = &outcome.costs;
+    let years = outcome.years.len() as f64;
+    let household = &contender.household;
+    let accounted = household.used_kwh.is_some() || household.made_kwh.is_some();
+    let beside = contender
+        .beside
+        .iter()
+        .filter(|beside| beside.account.tariff.fuel == Fuel::Electricity);
+    let readings =
+        std::iter::once(&outcome.electricity).chain(beside.map(|beside| &beside.reading));
+    let (bought_kwh, fed_back_kwh) = readings.fold((0.0, 0.0), |(bought, fed), reading| {
+        (
+            bought + reading.import_kwh.iter().sum::<f64>() / years,
+            fed + reading.export_kwh.iter().sum::<f64>() / years,
+        )
+    });
     let design = design_point(
         &contender.system,
         contender.indoor_c,
@@ -179,6 +217,19 @@ fn system(
         electricity_kwh: sums.electricity_kwh(),
         backup_kwh: is_machine.then_some(sums.backup_kwh + sums.immersion_kwh),
         fuel_kwh: burns_fuel.then_some(sums.fuel_kwh),
+        fuel: heating.boiler().map(|boiler| boiler.fuel.name().to_owned()),
+        hybrid: match heating {
+            Heating::Hybrid(hybrid) => Some(hybrid.rule.word().to_owned()),
+            _ => None,
+        },
+        boiler_heat_kwh: (is_machine && burns_fuel)
+            .then_some(sums.heater_space_kwh + sums.heater_water_kwh),
+        household_kwh: household
+            .used_kwh
+            .as_ref()
+            .map(|column| column.iter().sum::<f64>() / years),
+        bought_kwh: accounted.then_some(bought_kwh),
+        fed_back_kwh: household.made_kwh.is_some().then_some(fed_back_kwh),
         spf_h1: sums.spf_h1(),
         spf_h2: sums.spf_h2(),
         spf_h3: sums.spf_h3(),
@@ -212,6 +263,9 @@ fn system(
         cost_standing: costs.standing,
         cost_tax: costs.tax,
         carbon_kg: sums.carbon_kg,
+        refrigerant_kg: contender
+            .leakage
+            .map(|leakage| leakage.kg_per_year(LEAKAGE_LIFE_YEARS)),
         saving: compared(costs.total, today.costs.total),
         carbon_saving_kg: compared(sums.carbon_kg, today.mean_sums().carbon_kg),
         capital: contender.capital,
@@ -238,6 +292,9 @@ fn system(
                 spf_h4: year.sums.spf_h4(),
             })
             .collect(),
+        shifting: None,
+        meters: meter_answers(contender, outcome),
+        bills: None,
     }
 }
 
@@ -483,7 +540,7 @@ pub fn compare_patterns(case: &Case, usual: &Pattern) -> Result<Vec<PatternCompa
             let figures = |pattern: &Pattern| -> Result<PatternFigures, Problems> {
                 let outcome = under_pattern(case, contender, pattern)?;
                 let sums = outcome.mean_sums();
-                let burns = matches!(contender.system.heating, Heating::Boiler { .. });
+                let burns = contender.system.heating.boiler().is_some();
                 Ok(PatternFigures {
                     pattern: pattern.words(),
                     space_heat_kwh: sums.space_heat_kwh(),

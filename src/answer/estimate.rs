@@ -4,6 +4,7 @@ use std::collections::BTreeMap;
 
 use serde::Serialize;
 
+use super::account::{BillAnswer, MeterAnswer, ShiftingAnswer};
 use super::home::{DesignAnswer, MeteredAnswer, PatternComparison, RoomsAnswer, StoreAnswer};
 use crate::problem::Finding;
 
@@ -111,6 +112,24 @@ pub struct SystemAnswer {
     /// Fuel on gross calorific value.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub fuel_kwh: Option<f64>,
+    /// What it burns, where it burns something.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub fuel: Option<String>,
+    /// Rule by which boiler and machine share the hours, where there are both.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub hybrid: Option<String>,
+    /// Heat of the boiler, where there are both.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub boiler_heat_kwh: Option<f64>,
+    /// Electricity of the rest of the home, where it is part of the account.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub household_kwh: Option<f64>,
+    /// Electricity bought by the whole home, where household or own generation are part of the account.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub bought_kwh: Option<f64>,
+    /// Electricity fed back, where the home makes some.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub fed_back_kwh: Option<f64>,
     /// Seasonal performance factor, machine alone.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub spf_h1: Option<f64>,
@@ -175,6 +194,9 @@ pub struct SystemAnswer {
     pub cost_tax: Option<f64>,
     /// Greenhouse gas, CO2 equivalent.
     pub carbon_kg: f64,
+    /// Greenhouse gas of refrigerant that escapes, CO2 equivalent a year, beside that of the energy; absent where the charge is not given.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub refrigerant_kg: Option<f64>,
     /// Today's cost less this; absent for today's system.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub saving: Option<f64>,
@@ -194,6 +216,14 @@ pub struct SystemAnswer {
     pub monthly: Vec<MonthAnswer>,
     /// Each year of the weather.
     pub by_year: Vec<YearAnswer>,
+    /// What shifting does, where the system shifts.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub shifting: Option<ShiftingAnswer>,
+    /// What its meters should read, to compare with after installation.
+    pub meters: Vec<MeterAnswer>,
+    /// Its bills by period, when they were asked for.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub bills: Option<Vec<BillAnswer>>,
 }
 
 /// A buried loop in the estimate: the year of its life that every figure is of, beside its first.

@@ -6,7 +6,7 @@ use serde::Serialize;
 use super::cycle::StateAnswer;
 use crate::home::Home;
 use crate::study::{Case, Contender, Traced, TracedDuty};
-use crate::year::{DutyKind, Flags, Heating, MachineSystem, Row};
+use crate::year::{DutyKind, Flags, MachineSystem, Row};
 
 /// One hour of one system, explained.
 #[derive(Debug, Clone, PartialEq, Serialize)]
@@ -90,7 +90,7 @@ impl Explanation {
             usize::from(case.site.month0[traced.hour]),
             traced,
         ));
-        if let Heating::HeatPump(machine) = &contender.system.heating {
+        if let Some(machine) = contender.system.heating.machine() {
             parts.extend(
                 traced
                     .duties
@@ -99,7 +99,7 @@ impl Explanation {
             );
             parts.extend(rest_of_machine(machine, &traced.row));
         }
-        if matches!(contender.system.heating, Heating::Boiler { .. }) {
+        if contender.system.heating.boiler().is_some() {
             parts.push(boiler(&traced.row));
         }
         parts.push(after(home, traced));
@@ -623,7 +623,7 @@ fn money(case: &Case, contender: &Contender, traced: &Traced) -> Part {
         "tariff, tax included",
     );
     if let Some(price) = row.fuel_price {
-        part.add("price of gas", price, "/kWh", "tariff, tax included");
+        part.add("price of fuel", price, "/kWh", "tariff, tax included");
     }
     let fuel = row.fuel_price.map_or_else(String::new, |price| {
         format!(" + {:.4} × {price:.4}", row.fuel_kwh)

@@ -8,7 +8,7 @@ use serde::Serialize;
 use crate::problem::{Finding, Severity};
 use crate::source::{BuriedLoop, Layout, RuleOfThumb, SOILS, Source, WaterSource};
 use crate::study::{Contender, LoopYear, NoShortest, ShortestLoop};
-use crate::year::{Heating, MachineSystem};
+use crate::year::MachineSystem;
 
 /// Years of a life that are reported.
 const REPORTED: [u32; 5] = [1, 2, 5, 10, 25];
@@ -163,9 +163,7 @@ pub fn ground_answer(
     life: &[LoopYear],
     shortest: Option<Result<ShortestLoop, NoShortest>>,
 ) -> Option<GroundAnswer> {
-    let Heating::HeatPump(machine) = &contender.system.heating else {
-        return None;
-    };
+    let machine = contender.system.heating.machine()?;
     let (kind, column) = match &machine.source {
         Source::OutdoorAir => return None,
         Source::Ground(ground) => ("quick loop", &ground.undisturbed_c[..]),

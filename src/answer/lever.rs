@@ -7,7 +7,6 @@ use super::estimate::LeverAnswer;
 use crate::source::Source;
 use crate::study::{Account, BreakEven, Crossing, Lever, Measure, Pair};
 use crate::units::Currency;
-use crate::year::Heating;
 
 /// One lever of one choice by one measure.
 pub(super) fn lever_answer(found: &BreakEven, pair: &Pair) -> LeverAnswer {
@@ -199,8 +198,8 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
             now * 100.0
         ),
         Lever::LoopResistance => {
-            let absolute = match &choice.system.heating {
-                Heating::HeatPump(system) => match &system.source {
+            let absolute = match choice.system.heating.machine() {
+                Some(system) => match &system.source {
                     Source::Ground(ground) => {
                         Some(format!("{:.2} K/kW", ground.resistance_k_per_kw * value))
                     }

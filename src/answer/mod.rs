@@ -1,5 +1,6 @@
 //! The JSON contract as plain structs, and the making of the estimate from what the runs came to.
 
+mod account;
 pub mod bills;
 mod compose;
 pub mod cycle;
@@ -16,6 +17,7 @@ pub mod study;
 pub mod tariff;
 pub mod weather;
 
+pub use account::{BillAnswer, MeterAnswer, MeterMonthAnswer, RunAnswer, ShiftingAnswer};
 pub use compose::{BillsTold, Told, compare_patterns, compose};
 pub use estimate::{
     Assumption, Estimate, GroundShown, HomeUsed, InputFile, LeverAnswer, MonthAnswer, SystemAnswer,

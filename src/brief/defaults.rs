@@ -80,6 +80,18 @@ defaults! {
     APPROACH = "choice.well.approach", "0 K", "water through the machine itself unless an exchanger is given";
     WELL_PUMP_EFFICIENCY = "choice.well.pump_efficiency", "40 %", "from the plug to the water: common practice, no source";
     BOILER_OUTPUT = "today.output", "24 kW", "common practice, no source";
+    PELLET_EFFICIENCY = "today.efficiency", "75 % gross",
+        "of a pellet boiler: default of SAP table 4a for automatic feed (from memory)";
+    HOUSEHOLD_SHAPE = "household.shape", "least at night, most at 18:00",
+        "common practice, no source";
+    HYBRID_FUEL = "choice.boiler.fuel", "gas", "common practice, no source";
+    ROOMS_ABOVE = "choice.shifting.rooms_above", "1 K", "a choice of ours: hardly noticed";
+    ROOMS_BELOW = "choice.shifting.rooms_below", "0 K", "so that a saving is not bought with cold rooms";
+    STORE_ABOVE = "choice.shifting.store_above", "5 K", "common practice, no source";
+    STORE_BELOW = "choice.shifting.store_below", "0 K", "so that a saving is not bought with cool water";
+    LEAKAGE = "choice.leakage", "1 %", "of the charge a year: common practice, no source";
+    LEAKAGE_AT_END = "choice.leakage_at_end", "10 %", "of the charge: common practice, no source";
+    LEAKAGE_LIFE = "years over which the leakage at the end is spread", "15 years", "common practice, no source";
     COMPARED_YEARS = "lifetime.years", "20 years", "common practice, no source";
     DISCOUNT_RATE = "lifetime.discount_rate", "3.5 %",
         "real social rate of the UK Treasury's Green Book (from memory)";

@@ -283,7 +283,7 @@ fn parts(
         );
     }
     let life = own.and_then(|own| own.life.as_ref());
-    let machine = if kind == Some(SystemKind::GasBoiler) {
+    let machine = if kind.is_some_and(|kind| kind.burns().is_some()) {
         &defaults::BOILER_LIFE
     } else {
         &defaults::MACHINE_LIFE

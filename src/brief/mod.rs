@@ -1,8 +1,11 @@
 //! The brief: one TOML file that describes a home, its weather, today and the choices.
 
 mod bills;
+mod boiler;
 mod by_rooms;
+mod carbon;
 mod clock_leaves;
+mod columns;
 mod defaults;
 mod demo;
 mod emitter_findings;
@@ -14,6 +17,7 @@ mod files;
 mod ground;
 mod home;
 mod hot_water;
+mod household;
 mod leaves;
 mod lifetime;
 mod locale;
@@ -23,6 +27,7 @@ mod pattern;
 mod raw;
 mod read;
 mod rooms;
+mod shifting;
 mod system;
 mod weather;
 

@@ -4,6 +4,7 @@ use schemars::JsonSchema;
 use serde::Deserialize;
 
 use super::clock_leaves::{ClockHour, DaySpans, Spells, WeekDay};
+use super::columns::{BoilerFuel, ByMonth, DayShape, RuleWord, Stamps};
 use super::ground::{
     BoreTable, BoreholeTable, BrineTable, GroundTable, PipeTable, TrenchTable, WellTable,
 };
@@ -13,10 +14,11 @@ use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind, TappingProfile, WarmUp};
 use crate::locale::{DateOrder, Paper};
+use crate::plan::ShiftRule;
 use crate::units::{
-    AirChangeRate, AirVolume, Area, CarbonFactor, Diffusivity, Duration, Energy,
-    HeatLossCoefficient, Length, LoopResistance, Power, Share, Temperature, TemperatureDifference,
-    WaterVolume,
+    AirChangeRate, AirVolume, Area, CarbonFactor, Diffusivity, Duration, Energy, Fuel,
+    HeatLossCoefficient, Length, LoopResistance, Mass, Power, Share, Temperature,
+    TemperatureDifference, WaterVolume,
 };
 
 /// A home, its weather, its energy, what heats it today and the choices.
@@ -28,6 +30,8 @@ pub(super) struct Brief {
     pub weather: Option<Section<Weather>>,
     /// Tariffs and carbon.
     pub energy: Option<Section<Energies>>,
+    /// What the home uses and makes beside its heating.
+    pub household: Option<Section<HouseholdTable>>,
     /// How the years of a system's life are counted.
     pub lifetime: Option<Section<LifetimeTable>>,
     /// What heats the home today.
@@ -311,14 +315,100 @@ pub(super) struct Energies {
     pub electricity: Option<Leaf<String>>,
     /// Gas tariff, relative to the brief.
     pub gas: Option<Leaf<String>>,
+    /// Heating-oil tariff, relative to the brief.
+    pub heating_oil: Option<Leaf<String>>,
+    /// Tariff of liquefied petroleum gas, relative to the brief.
+    pub lpg: Option<Leaf<String>>,
+    /// Pellet tariff, relative to the brief.
+    pub pellets: Option<Leaf<String>>,
     /// Published set of carbon factors by name.
     pub carbon: Option<Leaf<String>>,
     /// Carbon of a kilowatt-hour of electricity; give carbon_scope with it.
     pub electricity_carbon: Option<Leaf<CarbonFactor>>,
+    /// Carbon of a kilowatt-hour of electricity in each month, January first; give carbon_scope with it.
+    pub electricity_carbon_by_month: Option<Leaf<ByMonth>>,
     /// Carbon of a kilowatt-hour of gas on gross calorific value; give carbon_scope with it.
     pub gas_carbon: Option<Leaf<CarbonFactor>>,
-    /// What both carbon factors count.
+    /// Carbon of a kilowatt-hour of heating oil on gross calorific value; give carbon_scope with it.
+    pub heating_oil_carbon: Option<Leaf<CarbonFactor>>,
+    /// Carbon of a kilowatt-hour of liquefied petroleum gas on gross calorific value; give carbon_scope with it.
+    pub lpg_carbon: Option<Leaf<CarbonFactor>>,
+    /// Carbon of a kilowatt-hour of pellets on gross calorific value; give carbon_scope with it.
+    pub pellets_carbon: Option<Leaf<CarbonFactor>>,
+    /// What the carbon factors given here count.
     pub carbon_scope: Option<Leaf<String>>,
+    /// Carbon of electricity hour by hour; give carbon_scope with it.
+    pub hourly_carbon: Option<Section<HourlyCarbon>>,
+}
+
+/// Carbon of electricity hour by hour.
+#[derive(Debug, Deserialize, JsonSchema)]
+pub(super) struct HourlyCarbon {
+    /// Hourly CSV with a column "time", relative to the brief.
+    pub file: Option<Leaf<String>>,
+    /// Column of the values, when the file has several.
+    pub column: Option<Leaf<String>>,
+    /// Unit of the values: "kg/kWh" or "g/kWh".
+    pub unit: Option<Leaf<String>>,
+    /// Which end of its hour a stamp marks: "beginning" or "ending".
+    pub stamps: Option<Leaf<(Stamps,)>>,
+    /// Use the values of the same day and hour for any year.
+    pub every_year: Option<Leaf<bool>>,
+}
+
+/// Electricity of the home beside heating and hot water, and what it makes itself.
+#[derive(Debug, Deserialize, JsonSchema)]
+pub(super) struct HouseholdTable {
+    /// Electricity used in a year; with a load file the file is scaled to it.
+    pub electricity: Option<Leaf<Energy>>,
+    /// How it is spread over the day: 24 parts, midnight first.
+    pub shape: Option<Leaf<DayShape>>,
+    /// Hourly CSV of the electricity used, kWh, with a column "time"; relative to the brief.
+    pub load: Option<Leaf<String>>,
+    /// Column of the load, when the file has several.
+    pub load_column: Option<Leaf<String>>,
+    /// Hourly CSV of what the home makes, kWh, with a column "time"; relative to the brief.
+    pub generation: Option<Leaf<String>>,
+    /// Column of the generation, when the file has several.
+    pub generation_column: Option<Leaf<String>>,
+    /// Which end of its hour a stamp of these files marks: "beginning" or "ending".
+    pub stamps: Option<Leaf<(Stamps,)>>,
+    /// Use the values of the same day and hour of these files for any year.
+    pub every_year: Option<Leaf<bool>>,
+}
+
+/// A boiler kept beside a heat pump.
+#[derive(Debug, Deserialize, JsonSchema)]
+pub(super) struct BoilerTable {
+    /// What it burns: "gas", "heating-oil", "lpg" or "pellets".
+    pub fuel: Option<Leaf<(BoilerFuel,)>>,
+    /// Greatest output.
+    pub output: Option<Leaf<Power>>,
+    /// Seasonal efficiency as measured or officially rated, "84 % gross".
+    pub efficiency: Option<Leaf<GrossEfficiency>>,
+    /// What is kept of the ideal efficiency in a home.
+    pub field_factor: Option<Leaf<Share>>,
+    /// The flow temperature it is set to; without one it follows the load.
+    pub fixed_flow: Option<Leaf<Temperature>>,
+    /// Which of the two serves an hour: "by-outdoor", "by-cost" or "by-carbon".
+    pub rule: Option<Leaf<(RuleWord,)>>,
+    /// By outdoor temperature: the boiler serves below this.
+    pub below: Option<Leaf<Temperature>>,
+}
+
+/// Rooms and store made warmer in cheap hours.
+#[derive(Debug, Deserialize, JsonSchema)]
+pub(super) struct ShiftingTable {
+    /// How the hours are chosen: "timer", or "best-day", which knows the day ahead and so is an upper bound.
+    pub rule: Option<Leaf<(ShiftRule,)>>,
+    /// How much warmer than the set point the rooms may be made.
+    pub rooms_above: Option<Leaf<TemperatureDifference>>,
+    /// How much cooler than the set point the rooms may be left.
+    pub rooms_below: Option<Leaf<TemperatureDifference>>,
+    /// How much hotter than its set point the store may be made.
+    pub store_above: Option<Leaf<TemperatureDifference>>,
+    /// How much cooler than its set point the store may be left.
+    pub store_below: Option<Leaf<TemperatureDifference>>,
 }
 
 /// A heating system: that of today or a choice. What it does not say, it takes from the home.
@@ -384,6 +474,20 @@ pub(super) struct SystemTable {
 
     /// Something else in the home still burns gas, so that its standing charge stays.
     pub keeps_gas: Option<Leaf<bool>>,
+    /// Another electricity tariff that comes with it, relative to the brief.
+    pub electricity: Option<Leaf<String>>,
+    /// Another tariff of the fuel it burns, relative to the brief.
+    pub fuel: Option<Leaf<String>>,
+    /// Heat pump: a boiler kept beside it, which makes it a hybrid.
+    pub boiler: Option<Section<BoilerTable>>,
+    /// Electric heating: rooms and store made warmer in cheap hours.
+    pub shifting: Option<Section<ShiftingTable>>,
+    /// Heat pump: refrigerant in it, to count what escapes.
+    pub refrigerant_charge: Option<Leaf<Mass>>,
+    /// Heat pump: share of the refrigerant that escapes in a year.
+    pub leakage: Option<Leaf<Share>>,
+    /// Heat pump: share of the refrigerant that escapes when it is taken out.
+    pub leakage_at_end: Option<Leaf<Share>>,
     /// What it costs to put in, in one amount or part by part.
     pub capital: Option<Leaf<Capital>>,
     /// What it costs besides, and how long its parts last.
@@ -413,6 +517,12 @@ pub(super) struct SystemTable {
 pub(super) enum SystemKind {
     /// A gas boiler.
     GasBoiler,
+    /// A boiler for heating oil.
+    OilBoiler,
+    /// A boiler for liquefied petroleum gas.
+    LpgBoiler,
+    /// A boiler for wood pellets.
+    PelletBoiler,
     /// A heat pump that draws on outdoor air.
     AirSource,
     /// A heat pump that draws on a buried loop.
@@ -429,12 +539,31 @@ impl SystemKind {
             .find(|(_, kind)| *kind == self)
             .map_or("", |(word, _)| word)
     }
+
+    /// What it burns, where it is a boiler.
+    pub fn burns(self) -> Option<Fuel> {
+        match self {
+            Self::GasBoiler => Some(Fuel::Gas),
+            Self::OilBoiler => Some(Fuel::HeatingOil),
+            Self::LpgBoiler => Some(Fuel::Lpg),
+            Self::PelletBoiler => Some(Fuel::Pellets),
+            Self::AirSource | Self::GroundSource | Self::DirectElectric => None,
+        }
+    }
+
+    /// Whether it is a heat pump.
+    pub fn is_heat_pump(self) -> bool {
+        matches!(self, Self::AirSource | Self::GroundSource)
+    }
 }
 
 impl Word for SystemKind {
     const NAME: &'static str = "a kind of heating system";
     const WORDS: &'static [(&'static str, Self)] = &[
         ("gas-boiler", Self::GasBoiler),
+        ("oil-boiler", Self::OilBoiler),
+        ("lpg-boiler", Self::LpgBoiler),
+        ("pellet-boiler", Self::PelletBoiler),
         ("air-source", Self::AirSource),
         ("ground-source", Self::GroundSource),
         ("direct-electric", Self::DirectElectric),

@@ -128,6 +128,9 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     let mut findings = weather
         .as_ref()
         .map_or_else(Vec::new, |weather| weather.findings.clone());
+    if let Some(energy) = &energy {
+        findings.extend(energy.supplies().flat_map(|supply| supply.findings.clone()));
+    }
     let bills = weather.as_ref().zip(zone).and_then(|(weather, zone)| {
         let today = raw.today.as_ref();
         let today_efficiency =

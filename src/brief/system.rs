@@ -5,6 +5,7 @@ use std::sync::Arc;
 use rust_decimal::prelude::ToPrimitive as _;
 
 use super::bills::BillsMade;
+use super::boiler::{Kept, boiler, kept};
 use super::defaults;
 use super::energy::{Energy, Supply};
 use super::files::Folder;
@@ -15,16 +16,18 @@ use super::lifetime::outlay;
 use super::machine::{MachineMade, machine};
 use super::notes::Notes;
 use super::raw::{Home, SystemKind, SystemTable};
+use super::shifting::{shifted, shifting};
 use crate::answer::RoomsAnswer;
 use crate::bounds;
+use crate::carbon::Leakage;
 use crate::document::{Check, Leaf, Section};
-use crate::heater::{Boiler, BoilerEfficiency};
 use crate::plan::{Ability, following};
 use crate::problem::Finding;
 use crate::source::{Memory, Source};
-use crate::study::{Contender, SHOWN_YEAR, design_point};
-use crate::units::{Money, TemperatureDifference, parse};
-use crate::year::{Heating, MachineSystem, Site, System};
+use crate::study::{Beside, Contender, SHOWN_YEAR, design_point};
+use crate::tariff::Metering;
+use crate::units::{Fuel, Money, TemperatureDifference, parse};
+use crate::year::{Heating, HybridSystem, MachineSystem, Metered, Plan, Site, State, System, run};
 
 /// What a system is put into.
 pub(super) struct Surroundings<'a> {
@@ -79,7 +82,6 @@ pub(super) fn contender(
         check,
         notes,
     );
-    let keeps_gas = check.value(&table.keeps_gas);
     let capital = capital(table, around.energy, check);
     let currency = around.energy.map(|energy| energy.currency);
     let outlay = outlay(
@@ -93,41 +95,42 @@ pub(super) fn contender(
     let shown_year = shown_year(table, check);
     let kind = kind?;
     only_its_own_fields(table, kind, check);
-    let heating = match kind {
-        SystemKind::GasBoiler => boiler(table, check, notes).map(|heating| (heating, None)),
-        SystemKind::DirectElectric => direct_electric(table, check).map(|heating| (heating, None)),
-        SystemKind::AirSource | SystemKind::GroundSource => {
-            heat_pump(table, kind, around, warm.as_ref(), check, notes)
+    let shifting = table
+        .shifting
+        .as_ref()
+        .map(|table| shifting(table, check, notes));
+    let heating = match kind.burns() {
+        Some(fuel) => boiler(table, fuel, check, notes).map(|(boiler, fixed_flow_c)| {
+            let heating = Heating::Boiler {
+                boiler,
+                fixed_flow_c,
+            };
+            (heating, None)
+        }),
+        None if kind == SystemKind::DirectElectric => {
+            direct_electric(table, check).map(|heating| (heating, None))
         }
+        None => heat_pump(table, kind, around, warm.as_ref(), check, notes),
     };
-    let burns_gas = kind == SystemKind::GasBoiler;
-    if burns_gas && around.energy.is_some_and(|energy| energy.gas.is_none()) {
-        check.missing(
-            &table.span(),
-            "energy.gas",
-            "\"../tariffs/flat_gas.toml\", which a gas boiler needs",
-        );
-    }
+    let burnt = heating
+        .as_ref()
+        .and_then(|(heating, _)| heating.boiler())
+        .map(|boiler| boiler.fuel)
+        .or(kind.burns());
+    let supplies = supplies(table, burnt, around, check);
     let (heating, made) = heating?;
     let (warm, label, energy, site) = (warm?, label?, around.energy?, around.site?);
-    let gas = if burns_gas || keeps_gas.unwrap_or(false) {
-        energy.gas.as_ref()
-    } else {
-        None
-    };
-    if burns_gas && gas.is_none() {
-        return None;
-    }
+    let mut supplies = supplies?;
     let band_k = parse::<TemperatureDifference>(defaults::BACKUP_BAND.value)
         .ok()?
         .k();
-    if matches!(heating, Heating::HeatPump(_)) {
+    if heating.machine().is_some() {
         notes.used(&defaults::BACKUP_BAND);
     }
-    let fuel_signal = gas.filter(|_| burns_gas).map(|gas| gas.signal.clone());
     let (machine, mut findings) =
         made.map_or((None, Vec::new()), |made| (Some(made.label), made.findings));
     findings.extend(warm.findings);
+    findings.append(&mut supplies.findings);
     let system = System {
         label,
         home: warm.home,
@@ -144,14 +147,38 @@ pub(super) fn contender(
         output_kw: design.carried_kw(),
         backup_band_k: band_k,
     };
-    let electricity = energy.electricity.signal.clone();
-    let plan = following(
-        &warm.pattern,
-        &site.civil,
-        ability,
-        electricity,
-        fuel_signal,
-    );
+    let fuel_signal = supplies.fuel.as_ref().map(|fuel| fuel.signal.clone());
+    let plan = |electricity: &Supply| {
+        following(
+            &warm.pattern,
+            &site.civil,
+            ability,
+            electricity.signal.clone(),
+            fuel_signal.clone(),
+        )
+    };
+    if supplies.electricity.has_steps() {
+        // What the steps depend on is what a first run reads.
+        let kwh = expected_kwh(
+            &supplies.electricity,
+            energy,
+            site,
+            &system,
+            &plan,
+            warm.indoor_c,
+        );
+        supplies.electricity = supplies.electricity.expecting(kwh);
+    }
+    let asked = plan(&supplies.electricity);
+    let (plan, unshifted, shift_rule) = match shifting {
+        None => (asked, None, None),
+        Some(shifting) => {
+            let shifting = shifting?;
+            let plan = shifted(&shifting, &asked, site, &system, warm.indoor_c);
+            (plan, Some(asked), Some(shifting.0))
+        }
+    };
+    let leakage = leakage(table, system.heating.machine(), check, notes);
     let capital = capital?;
     Some(Made {
         contender: Contender {
@@ -159,8 +186,13 @@ pub(super) fn contender(
             today: around.today,
             system,
             plan: Arc::new(plan),
-            electricity: energy.electricity.account.clone(),
-            fuel: gas.map(|Supply { account, .. }| account.clone()),
+            electricity: supplies.electricity.account,
+            fuel: supplies.fuel.map(|supply| supply.account),
+            beside: supplies.beside,
+            household: Arc::clone(&energy.household),
+            unshifted: unshifted.map(Arc::new),
+            shift_rule,
+            leakage,
             indoor_c: warm.indoor_c,
             design_outdoor_c: warm.design_outdoor_c,
             design_load_kw: warm.design_load_kw,
@@ -176,6 +208,128 @@ pub(super) fn contender(
         rooms: warm.rooms,
         parts_w_per_k: warm.parts_w_per_k,
         findings,
+    })
+}
+
+/// What a system is supplied with.
+struct Supplies {
+    electricity: Supply,
+    fuel: Option<Supply>,
+    beside: Vec<Beside>,
+    findings: Vec<Finding>,
+}
+
+/// The tariffs of a system: its own where it names them, else the home's; and what goes on beside it.
+fn supplies(
+    table: &Section<SystemTable>,
+    burnt: Option<Fuel>,
+    around: &Surroundings<'_>,
+    check: &mut Check,
+) -> Option<Supplies> {
+    let (energy, site) = (around.energy?, around.site?);
+    let before = check.problems().len();
+    let mut findings = Vec::new();
+    let mut own = |leaf: &Option<Leaf<String>>, fuel: Fuel, check: &mut Check| {
+        let supply = energy.of_choice(leaf, fuel, around.folder, site, check)?;
+        findings.extend(supply.findings.iter().cloned());
+        Some(supply)
+    };
+    let electricity = own(&table.electricity, Fuel::Electricity, check);
+    let fuel =
+        burnt.and_then(|fuel| own(&table.fuel, fuel, check).or_else(|| energy.fuel(fuel).cloned()));
+    if let (Some(burnt), None, None) = (burnt, &fuel, &table.fuel) {
+        let field = format!("energy.{}", burnt.name().replace('-', "_"));
+        let example = format!("\"../tariffs/….toml\", a tariff of {burnt}, which its boiler needs");
+        check.missing(&table.span(), &field, &example);
+    }
+    let mut beside = Vec::new();
+    if let Some(own) = &electricity
+        && own.account.tariff.metering == Metering::HeatPump
+    {
+        let account = energy.electricity.account.clone();
+        let reading = energy.household.reading(&account.meter);
+        beside.push(Beside { account, reading });
+    }
+    let keeps_gas = check.value(&table.keeps_gas).unwrap_or(false);
+    if keeps_gas && burnt != Some(Fuel::Gas) {
+        if let Some(gas) = energy.fuel(Fuel::Gas) {
+            let account = gas.account.clone();
+            let reading = account.meter.zero();
+            beside.push(Beside { account, reading });
+        } else {
+            check.missing(
+                &table.span(),
+                "energy.gas",
+                "\"../tariffs/flat_gas.toml\", whose standing charge keeps_gas keeps",
+            );
+        }
+    }
+    if check.problems().len() > before {
+        return None;
+    }
+    Some(Supplies {
+        electricity: electricity.unwrap_or_else(|| energy.electricity.clone()),
+        fuel,
+        beside,
+        findings,
+    })
+}
+
+/// What the electricity meter of a system reads in a mean year.
+fn expected_kwh(
+    electricity: &Supply,
+    energy: &Energy,
+    site: &Site,
+    system: &System,
+    plan: &impl Fn(&Supply) -> Plan,
+    indoor_c: f64,
+) -> f64 {
+    let account = &electricity.account;
+    let metering = account.tariff.metering;
+    let mut metered = Metered::new(metering, &energy.household, &account.meter, None);
+    let mut state = State::at_rest(system, indoor_c);
+    let hours = 0..site.outdoor_c.len();
+    run(
+        site,
+        system,
+        &plan(electricity),
+        hours,
+        &mut state,
+        &mut metered,
+    );
+    let read_kwh: f64 = metered.electricity.import_kwh.iter().sum();
+    read_kwh / site.years.len() as f64
+}
+
+/// What escapes of a machine's refrigerant, where its charge is given.
+fn leakage(
+    table: &SystemTable,
+    machine: Option<&MachineSystem>,
+    check: &mut Check,
+    notes: &mut Notes,
+) -> Option<Leakage> {
+    table.refrigerant_charge.as_ref()?;
+    let charge = check.within(&table.refrigerant_charge, &bounds::REFRIGERANT_KG);
+    let per_year = notes.quantity(check, &table.leakage, &bounds::SHARE, &defaults::LEAKAGE);
+    let at_end = notes.quantity(
+        check,
+        &table.leakage_at_end,
+        &bounds::SHARE,
+        &defaults::LEAKAGE_AT_END,
+    );
+    let facts = machine?.machine.refrigerant().facts();
+    let gwp100 = facts.gwp100_ar5.or(facts.gwp100_ar4)?;
+    notes.used(&defaults::LEAKAGE_LIFE);
+    notes.add(
+        format!("global warming potential of {}", facts.substance),
+        format!("{gwp100}"),
+        facts.gwp_source,
+    );
+    Some(Leakage {
+        charge_kg: charge?.kg(),
+        gwp100,
+        per_year: per_year?.fraction(),
+        at_end: at_end?.fraction(),
     })
 }
 
@@ -241,42 +395,6 @@ fn shown_year(table: &SystemTable, check: &mut Check) -> Option<u32> {
     whole_within(check, &table.shown_year, &bounds::LOOP_YEAR).map(|year| year as u32)
 }
 
-fn boiler(table: &SystemTable, check: &mut Check, notes: &mut Notes) -> Option<Heating> {
-    let output = notes.quantity(
-        check,
-        &table.output,
-        &bounds::OUTPUT_KW,
-        &defaults::BOILER_OUTPUT,
-    );
-    let fixed_flow = check.within(&table.fixed_flow, &bounds::FLOW_C);
-    if let (Some(leaf), Some(_)) = (&table.efficiency, &table.field_factor) {
-        check.refuse(
-            &leaf.span(),
-            "both efficiency and field_factor",
-            "one of them: a seasonal efficiency already holds what homes lose",
-            "remove field_factor",
-        );
-        return None;
-    }
-    let efficiency = if table.efficiency.is_some() {
-        BoilerEfficiency::Seasonal(check.value(&table.efficiency)?)
-    } else {
-        let factor = notes.quantity(
-            check,
-            &table.field_factor,
-            &bounds::FIELD_FACTOR,
-            &defaults::BOILER_FIELD_FACTOR,
-        );
-        BoilerEfficiency::FollowingReturn {
-            field_factor: factor?.fraction(),
-        }
-    };
-    Some(Heating::Boiler {
-        boiler: Boiler::new(output?.kw(), efficiency),
-        fixed_flow_c: fixed_flow.map(|flow| flow.c()),
-    })
-}
-
 fn direct_electric(table: &Section<SystemTable>, check: &mut Check) -> Option<Heating> {
     check.required(&table.output, &table.span(), "output", "\"8 kW\"");
     let output = check.within(&table.output, &bounds::OUTPUT_KW)?;
@@ -324,6 +442,7 @@ fn heat_pump(
         }
         _ => Some(Source::OutdoorAir),
     };
+    let kept = table.boiler.as_ref().map(|table| kept(table, check, notes));
     if let Some(made) = &mut made {
         made.findings.append(&mut findings);
     }
@@ -333,16 +452,30 @@ fn heat_pump(
         Source::Buried(_) | Source::Water(_) => made.machine.without_outside_pump(),
         Source::OutdoorAir | Source::Ground(_) => made.machine.clone(),
     };
-    Some((
-        Heating::HeatPump(Box::new(MachineSystem {
-            machine,
-            source,
-            backup_kw: backup?.kw(),
-            immersion_kw: immersion?.kw(),
-            circulation_kw: pump?.kw(),
-        })),
-        Some(made),
-    ))
+    let system = MachineSystem {
+        machine,
+        source,
+        backup_kw: backup?.kw(),
+        immersion_kw: immersion?.kw(),
+        circulation_kw: pump?.kw(),
+    };
+    let heating = match kept {
+        None => Heating::HeatPump(Box::new(system)),
+        Some(kept) => {
+            let Kept {
+                boiler,
+                fixed_flow_c,
+                rule,
+            } = kept?;
+            Heating::Hybrid(Box::new(HybridSystem {
+                machine: system,
+                boiler,
+                fixed_flow_c,
+                rule,
+            }))
+        }
+    };
+    Some((heating, Some(made)))
 }
 
 /// A field's name and its place, where the field is given.
@@ -354,8 +487,9 @@ fn given<T>(name: &'static str, leaf: &Option<Leaf<T>>) -> Given {
 
 /// Refuses fields that belong to another kind of system: they would be ignored without a word.
 fn only_its_own_fields(table: &SystemTable, kind: SystemKind, check: &mut Check) {
-    let is_machine = matches!(kind, SystemKind::AirSource | SystemKind::GroundSource);
-    let groups: [(bool, &str, Vec<Given>); 4] = [
+    let is_machine = kind.is_heat_pump();
+    let is_boiler = kind.burns().is_some();
+    let groups: [(bool, &str, Vec<Given>); 6] = [
         (
             is_machine,
             "a heat pump",
@@ -369,7 +503,21 @@ fn only_its_own_fields(table: &SystemTable, kind: SystemKind, check: &mut Check)
                 given("backup", &table.backup),
                 given("immersion", &table.immersion),
                 given("circulation_pump", &table.circulation_pump),
+                given("refrigerant_charge", &table.refrigerant_charge),
+                given("leakage", &table.leakage),
+                given("leakage_at_end", &table.leakage_at_end),
+                ("boiler", table.boiler.as_ref().map(Section::span)),
             ],
+        ),
+        (
+            !is_boiler,
+            "a heat pump or an electric heater",
+            vec![("shifting", table.shifting.as_ref().map(Section::span))],
+        ),
+        (
+            is_boiler || table.boiler.is_some(),
+            "a boiler",
+            vec![given("fuel", &table.fuel)],
         ),
         (
             kind == SystemKind::GroundSource,
@@ -389,7 +537,7 @@ fn only_its_own_fields(table: &SystemTable, kind: SystemKind, check: &mut Check)
             ],
         ),
         (
-            kind == SystemKind::GasBoiler,
+            is_boiler,
             "a boiler",
             vec![
                 given("efficiency", &table.efficiency),

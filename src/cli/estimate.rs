@@ -9,9 +9,12 @@ use crate::answer::{Estimate, compare_patterns, compose};
 use crate::brief::{Brief, DEFAULTS};
 use crate::chart::ChartError;
 use crate::home::Pattern;
+use crate::problem::Problems;
 use crate::report::{
-    Drawn, Material, estimate_text, home_text, ledger_csv, patterns_text, pictures, report_html,
+    Drawn, Material, accounts_text, estimate_text, home_text, ledger_csv, patterns_text, pictures,
+    report_html,
 };
+use crate::study::{Outcome, bills};
 use crate::year::Ledger;
 
 /// Names of the files that are always written.
@@ -42,6 +45,9 @@ pub struct Args {
     /// Say where each assumption is from.
     #[arg(long)]
     assumptions: bool,
+    /// Print the bills of every system, and what its meters should read.
+    #[arg(long)]
+    bills: bool,
     /// Also say each system's design point, rooms, store and running pattern.
     #[arg(long)]
     home: bool,
@@ -86,6 +92,9 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
     progress.at("break-even");
     let mut estimate = compose(&brief.case, &outcomes, &brief.told)?;
+    if args.bills {
+        estimate = estimate.with_bills(&brief.case, &outcomes)?;
+    }
     if args.patterns {
         estimate.patterns = compare_patterns(&brief.case, &usual_pattern())?;
     }
@@ -105,8 +114,23 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     warn(&estimate.findings);
     match args.format {
         Format::Json => print_json(&estimate),
-        Format::Text => print(&text(&estimate, args)),
+        Format::Text => {
+            let mut text = text(&estimate, args);
+            if args.bills {
+                text += &format!("\n\n{}", accounts(&estimate, &brief, &outcomes)?);
+            }
+            print(&text)
+        }
     }
+}
+
+/// The bills of every system and what its meters should read.
+fn accounts(estimate: &Estimate, brief: &Brief, outcomes: &[Outcome]) -> Result<String, Problems> {
+    let contenders = brief.case.contenders.iter().zip(outcomes);
+    let bills = contenders
+        .map(|(contender, outcome)| bills(contender, outcome))
+        .collect::<Result<Vec<_>, _>>()?;
+    Ok(accounts_text(estimate, &bills))
 }
 
 /// Everything that goes into the folder.

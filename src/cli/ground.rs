@@ -13,7 +13,6 @@ use crate::chart::{
 use crate::report::ground_text;
 use crate::source::Source;
 use crate::study::{Case, Contender, LoopYear, loop_life, shortest_loop};
-use crate::year::Heating;
 
 /// Bores, trenches and wells of a brief through the years: brine, walls, performance, and the shortest loop.
 ///
@@ -117,9 +116,9 @@ pub fn run(args: &Args) -> Result<(), Failure> {
 
 /// The ground sources that are asked for.
 fn chosen<'a>(case: &'a Case, args: &Args) -> Result<Vec<&'a Contender>, Failure> {
-    let is_ground = |contender: &&Contender| match &contender.system.heating {
-        Heating::HeatPump(machine) => machine.source != Source::OutdoorAir,
-        _ => false,
+    let is_ground = |contender: &&Contender| {
+        let machine = contender.system.heating.machine();
+        machine.is_some_and(|machine| machine.source != Source::OutdoorAir)
     };
     let all: Vec<_> = case.contenders.iter().filter(is_ground).collect();
     let labels = all
@@ -200,8 +199,8 @@ fn year_picture(
             hours_c: lines.last_year,
         });
     }
-    let undisturbed_c = match &contender.system.heating {
-        Heating::HeatPump(machine) => match &machine.source {
+    let undisturbed_c = match contender.system.heating.machine() {
+        Some(machine) => match &machine.source {
             Source::Buried(buried) if life.iter().any(|year| year.average_wall_c.is_some()) => {
                 let column = buried.undisturbed();
                 Some(column.iter().sum::<f64>() / column.len() as f64)
@@ -249,13 +248,12 @@ fn life_picture(path: &Path, contender: &Contender, life: &[LoopYear]) -> Result
 
 /// The lowest source temperature that the machine accepts.
 fn limit(contender: &Contender) -> Option<(String, f64)> {
-    match &contender.system.heating {
-        Heating::HeatPump(machine) => Some((
+    contender.system.heating.machine().map(|machine| {
+        (
             "lowest the machine accepts".to_owned(),
             machine.machine.limits().lowest_source_c,
-        )),
-        _ => None,
-    }
+        )
+    })
 }
 
 /// A picture as a file, SVG or PNG by its ending.

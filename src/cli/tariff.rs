@@ -9,8 +9,9 @@ use comfy_table::{CellAlignment, Table, presets};
 
 use super::{Failure, Format, print, print_json, warn};
 use crate::answer::tariff::{LoadAnswer, TariffAnswer};
-use crate::bill::{self, Bill, Charge, Connection, Line};
+use crate::bill::{self, Bill, Connection};
 use crate::calendar::{CivilHour, HourAxis};
+use crate::report::bill_table;
 use crate::series::{self, Layout, WithinHour, read_csv};
 use crate::tariff::{Band, Prices, StandingSpan, Steps, Tariff, When, clock, clock_days};
 use crate::units::{Currency, Fuel};
@@ -335,49 +336,6 @@ fn clock_table(bands: &[Band], currency: Currency) -> String {
     }
     align_right(&mut table, &[4]);
     table.to_string()
-}
-
-fn bill_table(bill: &Bill) -> String {
-    let mut table = plain_table(&["bill", "what", "quantity", "", "rate", bill.currency.code()]);
-    let bills: Vec<_> = bill.lines.chunk_by(|a, b| a.period == b.period).collect();
-    for lines in &bills {
-        let mut period = lines
-            .first()
-            .map_or(String::new(), |line| line.period.to_string());
-        for line in *lines {
-            table.add_row([
-                &std::mem::take(&mut period),
-                &line.what,
-                &line.quantity.round_dp(2).to_string(),
-                &line.unit,
-                &rate(line, bill.currency),
-                &line.amount.to_string(),
-            ]);
-        }
-        let sum = lines.iter().map(|line| line.amount).sum();
-        table.add_row([
-            "",
-            "to pay",
-            "",
-            "",
-            "",
-            &bill.currency.round(sum).to_string(),
-        ]);
-    }
-    if bills.len() > 1 {
-        table.add_row(["all", "to pay", "", "", "", &bill.total().to_string()]);
-    }
-    align_right(&mut table, &[2, 4, 5]);
-    table.to_string()
-}
-
-fn rate(line: &Line, currency: Currency) -> String {
-    if line.charge == Charge::Tax {
-        let percent = (line.rate * rust_decimal::Decimal::ONE_HUNDRED).normalize();
-        return format!("{percent} %");
-    }
-    let per = line.unit.strip_suffix('s').unwrap_or(&line.unit);
-    currency.price_words(line.rate, per)
 }
 
 fn months_line(bill: &Bill) -> String {

@@ -1,7 +1,11 @@
-//! Everything but heat pumps that makes heat: gas boilers and direct electric heating.
+//! Everything but heat pumps that makes heat: boilers, and the rule by which a boiler and a machine share the hours.
 
 mod boiler;
 mod efficiency;
+mod flue;
+mod share;
 
-pub use boiler::{Boiler, BoilerEfficiency, FIELD_FACTOR, ideal_gross_efficiency};
+pub use boiler::{Boiler, BoilerEfficiency, DRAWN_WATER_FACTOR, FIELD_FACTOR};
 pub use efficiency::{GrossEfficiency, NET_PER_GROSS_METHANE};
+pub use flue::Combustion;
+pub use share::{Effort, HybridRule, Side};

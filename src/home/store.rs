@@ -153,6 +153,14 @@ impl Store {
         self.capacity_kwh_per_k * (self.set_point_c - cold_c) / output_kw
     }
 
+    /// The same store with its set point moved by some kelvins; whether a block is due moves with it.
+    pub fn shifted(&self, by_k: f64) -> Self {
+        Self {
+            set_point_c: self.set_point_c + by_k,
+            ..*self
+        }
+    }
+
     /// The state of a store that is full.
     pub fn full(&self) -> StoreState {
         StoreState {

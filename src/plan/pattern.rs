@@ -59,6 +59,8 @@ pub fn following(
     Plan {
         set_point_c,
         backup_below_c,
+        asked_c: None,
+        store_shift_k: None,
         recovery,
         comfort_c: pattern.comfort_c(),
         electricity,

@@ -142,41 +142,41 @@ fn system(material: &Material<'_>, i: usize) -> Value {
     }
     put("kind_words", json!(answer.kind.replace('-', " ")));
     put("is_machine", json!(false));
-    match &contender.system.heating {
-        Heating::HeatPump(made) => {
-            let machine = &made.machine;
-            let refrigerant = machine.refrigerant();
-            put("is_machine", json!(true));
-            put(
-                "kind_words",
-                json!(format!("{} heat pump", answer.kind.replace('-', " "))),
-            );
-            put("typical", json!(machine.is_typical()));
-            put("rated_output_kw", json!(machine.rated_output_kw()));
-            put("rated_source_c", json!(machine.rated_condition().0));
-            put("rated_flow_c", json!(machine.rated_condition().1));
-            put("refrigerant", json!(refrigerant.name()));
-            put(
-                "safety_class",
-                json!(refrigerant.facts().safety_class.to_string()),
-            );
-            put("field_factor", json!(machine.field_factor()));
-            put("backup_kw", json!(made.backup_kw));
-            put("hours_backup_machine", json!(answer.hours_backup));
-            let coldest = material.ledgers[i]
-                .rows
-                .iter()
-                .filter_map(|row| row.source_c);
-            let coldest = coldest.fold(f64::INFINITY, f64::min);
-            if coldest.is_finite() {
-                put("coldest_source_c", json!(coldest));
-            }
+    if let Some(made) = contender.system.heating.machine() {
+        let machine = &made.machine;
+        let refrigerant = machine.refrigerant();
+        put("is_machine", json!(true));
+        put(
+            "kind_words",
+            json!(format!("{} heat pump", answer.kind.replace('-', " "))),
+        );
+        put("typical", json!(machine.is_typical()));
+        put("rated_output_kw", json!(machine.rated_output_kw()));
+        put("rated_source_c", json!(machine.rated_condition().0));
+        put("rated_flow_c", json!(machine.rated_condition().1));
+        put("refrigerant", json!(refrigerant.name()));
+        put(
+            "safety_class",
+            json!(refrigerant.facts().safety_class.to_string()),
+        );
+        put("field_factor", json!(machine.field_factor()));
+        put("backup_kw", json!(made.backup_kw));
+        put("hours_backup_machine", json!(answer.hours_backup));
+        let coldest = material.ledgers[i]
+            .rows
+            .iter()
+            .filter_map(|row| row.source_c);
+        let coldest = coldest.fold(f64::INFINITY, f64::min);
+        if coldest.is_finite() {
+            put("coldest_source_c", json!(coldest));
         }
-        Heating::Boiler {
-            fixed_flow_c: Some(flow_c),
-            ..
-        } => put("fixed_flow_c", json!(flow_c)),
-        Heating::Boiler { .. } | Heating::DirectElectric { .. } => {}
+    }
+    if let Heating::Boiler {
+        fixed_flow_c: Some(flow_c),
+        ..
+    } = &contender.system.heating
+    {
+        put("fixed_flow_c", json!(flow_c));
     }
     if let (Some(capital), Some(saving)) = (answer.capital, answer.saving)
         && saving > ABOUT_THE_SAME * (answer.cost + saving).abs()
@@ -261,7 +261,7 @@ fn in_the_hour(contender: &Contender, ledger: &Ledger, hour: usize) -> Option<Va
     let mut facts = Map::new();
     facts.insert("label".into(), json!(contender.system.label));
     facts.insert("today".into(), json!(contender.today));
-    let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
+    let is_machine = contender.system.heating.machine().is_some();
     let always = [
         ("fabric_loss_kwh", row.fabric_loss_kwh),
         ("gains_kwh", row.gains_kwh),
@@ -309,7 +309,7 @@ fn in_the_hour(contender: &Contender, ledger: &Ledger, hour: usize) -> Option<Va
 fn refrigerants(material: &Material<'_>) -> (Vec<&'static str>, Vec<String>) {
     let (mut flammable, mut cautions) = (Vec::new(), Vec::new());
     for contender in &material.case.contenders {
-        let Heating::HeatPump(made) = &contender.system.heating else {
+        let Some(made) = contender.system.heating.machine() else {
             continue;
         };
         let refrigerant = made.machine.refrigerant();

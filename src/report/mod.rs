@@ -3,6 +3,7 @@
 //! The long form is written once: `sections/*.md` are Markdown templates, `facts` is what they may speak of, `sentences` fills
 //! them, `blocks` reads the Markdown, `page` sets it as HTML. `pictures` fills the chart room's pictures.
 
+mod account;
 mod blocks;
 mod error;
 mod explain;
@@ -19,6 +20,7 @@ mod study;
 mod table;
 mod text;
 
+pub use account::{accounts_text, bill_table};
 pub use error::ReportError;
 pub use explain::explain_text;
 pub use ground::ground_text;

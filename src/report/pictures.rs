@@ -51,7 +51,12 @@ pub fn pictures(material: &Material<'_>) -> Result<Vec<Drawn>, ChartError> {
     all.extend(cop_year(material)?);
     for system in 0..material.case.contenders.len() {
         all.extend(energy_flow(material, system)?);
-        if let Heating::HeatPump(_) = &material.case.contenders[system].system.heating {
+        if material.case.contenders[system]
+            .system
+            .heating
+            .machine()
+            .is_some()
+        {
             all.extend(demand_and_output(material, system)?);
             all.extend(load_duration(material, system)?);
         }
@@ -161,7 +166,7 @@ fn cop_year(material: &Material<'_>) -> Result<Option<Drawn>, ChartError> {
         .iter()
         .zip(material.ledgers)
         .zip(&material.estimate.systems)
-        .filter(|((contender, _), _)| matches!(contender.system.heating, Heating::HeatPump(_)));
+        .filter(|((contender, _), _)| contender.system.heating.machine().is_some());
     let systems: Vec<_> = machines
         .map(|((_, ledger), answer)| chart::CopSystem {
             label: answer.label.clone(),
@@ -186,7 +191,7 @@ fn cop_of_hour(row: &Row) -> Option<(f64, f64)> {
 
 fn demand_and_output(material: &Material<'_>, system: usize) -> Result<Option<Drawn>, ChartError> {
     let contender = &material.case.contenders[system];
-    let Heating::HeatPump(machine) = &contender.system.heating else {
+    let Some(machine) = contender.system.heating.machine() else {
         return Ok(None);
     };
     let rows = year_rows(material, system);
@@ -290,7 +295,7 @@ fn coldest_days(material: &Material<'_>, system: usize) -> Result<Option<Drawn>,
     let civil = &case.site.civil[hours.clone()];
     let mut dates: Vec<_> = civil.iter().map(|hour| hour.date).collect();
     dates.dedup();
-    let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
+    let is_machine = contender.system.heating.machine().is_some();
     let answer = &material.estimate.systems[system];
     let data = chart::ColdestDays {
         system: answer.label.clone(),
@@ -350,6 +355,7 @@ fn weekday(day: Weekday) -> &'static str {
 pub(super) fn heater_name(heating: &Heating) -> &'static str {
     match heating {
         Heating::HeatPump(_) => "heat pump",
+        Heating::Hybrid(_) => "heat pump and boiler",
         Heating::Boiler { .. } => "boiler",
         Heating::DirectElectric { .. } => "electric heater",
     }
@@ -365,7 +371,7 @@ fn energy_flow(material: &Material<'_>, system: usize) -> Result<Option<Drawn>, 
         // Sums of thousands of hours: what lies below nothing by rounding is nothing.
         kwh: kwh.max(0.0),
     };
-    let is_machine = matches!(contender.system.heating, Heating::HeatPump(_));
+    let is_machine = contender.system.heating.machine().is_some();
     let source = match contender.kind {
         "air-source" => "outdoor air",
         "ground-source" => "ground",
@@ -382,7 +388,7 @@ fn energy_flow(material: &Material<'_>, system: usize) -> Result<Option<Drawn>, 
             flow(
                 Electricity,
                 "electricity, heating pump",
-                sums.circulation_kwh,
+                sums.circulation_kwh + sums.heater_electricity_kwh,
             ),
             flow(
                 Backup,

@@ -31,6 +31,9 @@ pub fn estimate_text(estimate: &Estimate, sources: bool) -> String {
             "{}",
             wrapped(&in_words(choice, levers, &estimate.currency), "", "  ")
         );
+        if let Some(shifting) = &choice.shifting {
+            let _ = writeln!(text, "{}", wrapped(&shifting.sentence, "  ", "  "));
+        }
     }
     for line in home_in_words(estimate) {
         let _ = writeln!(text, "{}", wrapped(&line, "", "  "));
@@ -85,6 +88,9 @@ const LINES: &[Line] = &[
         s.saving.map(|saving| format!("{saving:+.0}"))
     }),
     ("Carbon, kg CO2e", |s| Some(format!("{:.0}", s.carbon_kg))),
+    ("  refrigerant lost", |s| {
+        s.refrigerant_kg.map(|kg| format!("{kg:.1}"))
+    }),
     ("Heat to rooms, kWh", |s| {
         Some(format!("{:.0}", s.space_heat_kwh))
     }),
@@ -94,7 +100,10 @@ const LINES: &[Line] = &[
     ("Heat to hot water, kWh", |s| {
         Some(format!("{:.0}", s.hot_water_kwh))
     }),
-    ("Gas, gross kWh", |s| {
+    ("  by the boiler", |s| {
+        s.boiler_heat_kwh.map(|kwh| format!("{kwh:.0}"))
+    }),
+    ("Fuel, gross kWh", |s| {
         s.fuel_kwh.map(|kwh| format!("{kwh:.0}"))
     }),
     ("  efficiency, gross", |s| {
@@ -105,6 +114,12 @@ const LINES: &[Line] = &[
     }),
     ("  backup, immersion", |s| {
         s.backup_kwh.map(|kwh| format!("{kwh:.0}"))
+    }),
+    ("  bought by the home", |s| {
+        s.bought_kwh.map(|kwh| format!("{kwh:.0}"))
+    }),
+    ("  fed back", |s| {
+        s.fed_back_kwh.map(|kwh| format!("{kwh:.0}"))
     }),
     ("  highest hour, kW", |s| {
         Some(format!("{:.1}", s.peak_electric_kw))

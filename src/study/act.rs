@@ -6,7 +6,8 @@ use super::case::{Account, Contender};
 use super::lever::{Again, Lever};
 use crate::problem::{Place, Problem, Problems};
 use crate::source::Source;
-use crate::year::{Heating, Plan, Signal};
+use crate::units::Fuel;
+use crate::year::{Plan, Signal};
 
 impl Lever {
     /// Acts on contenders that stand as the brief put them. What belongs to the home or the supply moves for every system, what
@@ -29,6 +30,11 @@ impl Lever {
             Self::ElectricityRate => {
                 for contender in contenders {
                     contender.electricity = scaled(&contender.electricity, value);
+                    for beside in &mut contender.beside {
+                        if beside.account.tariff.fuel == Fuel::Electricity {
+                            beside.account = scaled(&beside.account, value);
+                        }
+                    }
                     times(&mut plan(contender).electricity.price, value);
                 }
             }
@@ -77,7 +83,9 @@ impl Lever {
                     {
                         *target_c += warmer_k;
                     }
-                    for set_point_c in plan.set_point_c.iter_mut().chain(&mut plan.backup_below_c) {
+                    let asked_c = plan.asked_c.iter_mut().flatten();
+                    let set_points_c = plan.set_point_c.iter_mut().chain(&mut plan.backup_below_c);
+                    for set_point_c in set_points_c.chain(asked_c) {
                         *set_point_c += warmer_k;
                     }
                 }
@@ -102,23 +110,23 @@ impl Lever {
 
     /// Acts on one choice.
     fn act_on(self, value: f64, contender: &mut Contender, hours: usize) -> Result<(), Problems> {
-        match (self, &mut contender.system.heating) {
+        match (self, contender.system.heating.machine_mut()) {
             (Self::FlowTemperature, _) => {
                 let emitters = &mut contender.system.home.emitters;
                 *emitters = emitters.with_design_flow(value, contender.indoor_c);
             }
-            (Self::RatedOutput, Heating::HeatPump(system)) => {
+            (Self::RatedOutput, Some(system)) => {
                 system.machine = system.machine.scaled_to(value);
             }
-            (Self::FieldFactor, Heating::HeatPump(system)) => {
+            (Self::FieldFactor, Some(system)) => {
                 system.machine = system.machine.with_field_factor(value);
             }
-            (Self::LoopResistance, Heating::HeatPump(system)) => {
+            (Self::LoopResistance, Some(system)) => {
                 if let Source::Ground(ground) = &mut system.source {
                     ground.resistance_k_per_kw *= value;
                 }
             }
-            (Self::LoopLength, Heating::HeatPump(system)) => {
+            (Self::LoopLength, Some(system)) => {
                 if let Source::Buried(buried) = &mut system.source {
                     let built = buried.design.with_length(value).build(hours);
                     **buried = built.map_err(|error| {
@@ -162,6 +170,6 @@ fn times(column: &mut [f64], factor: f64) {
 fn scaled(account: &Account, factor: f64) -> Account {
     Account {
         tariff: Arc::new(account.tariff.with_energy_times(factor)),
-        meter: Arc::clone(&account.meter),
+        ..account.clone()
     }
 }

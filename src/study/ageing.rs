@@ -2,7 +2,7 @@
 
 use super::case::{Case, Contender};
 use crate::source::{BuriedLoop, Memory, Source};
-use crate::year::{Heating, MachineSystem, Row, Sink, State, run};
+use crate::year::{MachineSystem, Row, Sink, State, run};
 
 /// Year of the loop's life that a comparison shows when the brief does not say: the fall of the ground is by then nearly done
 /// (a single bore falls as much again from year 1 to 2 as from 10 to 25), and most of its life is like it. A choice of ours.
@@ -103,10 +103,8 @@ impl Contender {
 
     /// Its machine and source, where it draws on ground that remembers.
     pub fn remembering(&self) -> Option<&MachineSystem> {
-        match &self.system.heating {
-            Heating::HeatPump(machine) if machine.source.remembers() => Some(machine),
-            _ => None,
-        }
+        let machine = self.system.heating.machine()?;
+        machine.source.remembers().then_some(machine)
     }
 }
 

@@ -9,14 +9,15 @@ use super::fuel_carbon::{Both, CarbonOfFuel};
 use super::lever::Lever;
 use super::outcome::{Outcome, YearOutcome, price};
 use crate::bill::Connection;
+use crate::carbon::Leakage;
 use crate::home::Pattern;
 use crate::lifetime::{Outlay, Terms};
-use crate::plan::Ability;
+use crate::plan::{Ability, ShiftRule};
 use crate::problem::Problems;
 use crate::source::Memory;
-use crate::tariff::{Meter, Tariff};
+use crate::tariff::{Meter, Reading, Tariff};
 use crate::units::Currency;
-use crate::year::{Ledger, Metered, Plan, Site, State, System, Totals, run};
+use crate::year::{Household, Ledger, Metered, Plan, Site, State, System, Totals, run};
 
 /// One home's weather, and the systems that could heat it.
 #[derive(Debug, Clone)]
@@ -50,6 +51,18 @@ pub struct Account {
     pub tariff: Arc<Tariff>,
     /// How hours are sorted for it.
     pub meter: Arc<Meter>,
+    /// What the price signal of a tariff with steps expects the meter to read in a year, kWh; nothing where there are none.
+    pub expected_kwh: Option<f64>,
+}
+
+/// An account of the home that its heating does not touch, so that its reading is known beforehand: the household's own meter
+/// where the heat pump has another, gas that is kept for a hob.
+#[derive(Debug, Clone)]
+pub struct Beside {
+    /// What is charged.
+    pub account: Account,
+    /// What its meter reads over all years.
+    pub reading: Reading,
 }
 
 /// One system with its plan and what it is charged.
@@ -65,8 +78,18 @@ pub struct Contender {
     pub plan: Arc<Plan>,
     /// Electricity.
     pub electricity: Account,
-    /// The fuel it burns, or that the home keeps for something else.
+    /// The fuel it burns.
     pub fuel: Option<Account>,
+    /// What goes on whatever heats the home.
+    pub beside: Vec<Beside>,
+    /// What the home uses and makes beside its heating.
+    pub household: Arc<Household>,
+    /// The plan without shifting, where the plan shifts.
+    pub unshifted: Option<Arc<Plan>>,
+    /// How the hours are chosen, where the plan shifts.
+    pub shift_rule: Option<ShiftRule>,
+    /// What escapes of its refrigerant, where that is counted.
+    pub leakage: Option<Leakage>,
     /// Indoor set point, °C.
     pub indoor_c: f64,
     /// Design outdoor temperature, °C.
@@ -279,6 +302,8 @@ impl Case {
             ..State::at_rest(system, contender.indoor_c)
         };
         let mut metered = Metered::new(
+            contender.electricity.tariff.metering,
+            &contender.household,
             &contender.electricity.meter,
             contender.fuel.as_ref().map(|fuel| &*fuel.meter),
         );
@@ -308,7 +333,7 @@ impl Case {
 impl Contender {
     /// Whether the fuel's standing charge goes on.
     pub fn connection(&self) -> Connection {
-        // An account is only held when the system burns the fuel or the home keeps it.
+        // An account is only held while something uses what it sells.
         Connection::Kept
     }
 }

@@ -3,7 +3,7 @@
 use super::balance::cold_side;
 use crate::home::water_flow_l_per_min;
 use crate::source::Memory;
-use crate::year::{Heating, System};
+use crate::year::{Heating, MachineSystem, System};
 
 /// A system at its design point.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -53,21 +53,23 @@ pub fn design_point(
     let emitters = &system.home.emitters;
     let water = emitters.at_load(load_kw, indoor_c);
     let heater_flow_c = water.flow_c + emitters.header_k();
-    let (output_kw, backup_kw) = match &system.heating {
-        Heating::HeatPump(machine) => {
-            let cold = cold_side(machine, outdoor_c, &ground);
-            let highest_c = machine.machine.limits().highest_flow_at(cold.open_c);
-            let output_kw = if heater_flow_c <= highest_c {
-                machine.machine.greatest_output_kw(&cold, heater_flow_c)
-            } else {
-                let carried_kw = emitters.output_kw(highest_c - emitters.header_k(), indoor_c);
-                machine
-                    .machine
-                    .greatest_output_kw(&cold, highest_c)
-                    .min(carried_kw)
-            };
-            (output_kw, Some(machine.backup_kw))
+    let of_machine = |machine: &MachineSystem| {
+        let cold = cold_side(machine, outdoor_c, &ground);
+        let highest_c = machine.machine.limits().highest_flow_at(cold.open_c);
+        if heater_flow_c <= highest_c {
+            machine.machine.greatest_output_kw(&cold, heater_flow_c)
+        } else {
+            let carried_kw = emitters.output_kw(highest_c - emitters.header_k(), indoor_c);
+            machine
+                .machine
+                .greatest_output_kw(&cold, highest_c)
+                .min(carried_kw)
         }
+    };
+    let (output_kw, backup_kw) = match &system.heating {
+        Heating::HeatPump(machine) => (of_machine(machine), Some(machine.backup_kw)),
+        // The boiler adds what the machine cannot.
+        Heating::Hybrid(hybrid) => (of_machine(&hybrid.machine), Some(hybrid.boiler.output_kw)),
         Heating::Boiler { boiler, .. } => (boiler.output_kw, None),
         Heating::DirectElectric { output_kw } => (*output_kw, None),
     };

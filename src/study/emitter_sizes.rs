@@ -5,7 +5,6 @@ use super::lever::Lever;
 use super::pair::{CHOICE, Compared, Pair};
 use crate::home::Group;
 use crate::problem::Problems;
-use crate::year::Heating;
 
 /// Design flow temperatures looked at, °C.
 const FLOWS_C: (f64, f64) = (35.0, 65.0);
@@ -41,7 +40,7 @@ pub struct EmitterYear {
 /// # Errors
 /// When a year cannot be run or billed.
 pub fn emitter_sizes(pair: &Pair) -> Result<Vec<EmitterSize>, Problems> {
-    if !matches!(pair.choice().system.heating, Heating::HeatPump(_)) {
+    if pair.choice().system.heating.machine().is_none() {
         return Ok(Vec::new());
     }
     let flows = (0..=STEPS).map(|i| FLOWS_C.0 + (FLOWS_C.1 - FLOWS_C.0) * i as f64 / STEPS as f64);

@@ -4,7 +4,6 @@ use super::case::Case;
 use crate::bounds::{self, Bound};
 use crate::problem::{Place, Problem, Problems};
 use crate::source::{Memory, Source};
-use crate::year::Heating;
 
 /// One quantity that can be moved, everything else staying as it is.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -181,9 +180,7 @@ impl Lever {
     /// Highest design flow that the machine of a choice reaches on the design day, °C; nothing for other heating.
     fn highest_flow_c(self, case: &Case, choice: usize) -> Option<f64> {
         let contender = case.contenders.get(choice)?;
-        let Heating::HeatPump(system) = &contender.system.heating else {
-            return None;
-        };
+        let system = contender.system.heating.machine()?;
         let limits = system.machine.limits();
         let ground = contender
             .aged
@@ -253,7 +250,7 @@ impl Lever {
     /// Where it stands for a choice; nothing where the choice has no such quantity.
     pub fn now(self, case: &Case, choice: usize) -> Option<f64> {
         let contender = case.contenders.get(choice)?;
-        let stands = match (self, &contender.system.heating) {
+        let stands = match (self, contender.system.heating.machine()) {
             (Self::FuelRate, _) => case
                 .contenders
                 .iter()
@@ -263,14 +260,12 @@ impl Lever {
             (Self::HotWater, _) => contender.system.home.hot_water.as_ref().map(|_| 1.0),
             (Self::FlowTemperature, _) => Some(contender.system.home.emitters.design_flow_c()),
             (Self::Indoor, _) => Some(contender.indoor_c),
-            (Self::RatedOutput, Heating::HeatPump(system)) => {
-                Some(system.machine.rated_output_kw())
-            }
-            (Self::FieldFactor, Heating::HeatPump(system)) => Some(system.machine.field_factor()),
-            (Self::LoopResistance, Heating::HeatPump(system)) => {
+            (Self::RatedOutput, Some(system)) => Some(system.machine.rated_output_kw()),
+            (Self::FieldFactor, Some(system)) => Some(system.machine.field_factor()),
+            (Self::LoopResistance, Some(system)) => {
                 matches!(system.source, Source::Ground(_)).then_some(1.0)
             }
-            (Self::LoopLength, Heating::HeatPump(system)) => match &system.source {
+            (Self::LoopLength, Some(system)) => match &system.source {
                 Source::Buried(buried) => Some(buried.length_m()),
                 _ => None,
             },

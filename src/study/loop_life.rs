@@ -5,7 +5,7 @@ use std::ops::Range;
 use super::ageing::settled;
 use super::case::{Case, Contender};
 use crate::source::{BuriedLoop, NoResponse, Source};
-use crate::year::{Flags, Heating, MachineSystem, Row, State, Sums, Unwatched, step};
+use crate::year::{Flags, MachineSystem, Row, State, Sums, Unwatched, step};
 
 /// Lengths between which the shortest loop is looked for, as shares of the described one.
 const STRETCH: (f64, f64) = (0.2, 6.0);
@@ -127,7 +127,7 @@ pub fn loop_life(
     years: u32,
     mut watch: impl FnMut(u32, usize, Option<BrineHour>),
 ) -> Vec<LoopYear> {
-    let Heating::HeatPump(machine) = &contender.system.heating else {
+    let Some(machine) = contender.system.heating.machine() else {
         return Vec::new();
     };
     let mut state = State::at_rest(&contender.system, contender.indoor_c);
@@ -281,10 +281,13 @@ fn with_length(
         .map_err(NoShortest::Response)?;
     let mut contender = contender.clone();
     contender.aged = None;
-    contender.system.heating = Heating::HeatPump(Box::new(MachineSystem {
+    let longer = MachineSystem {
         source: Source::Buried(Box::new(other)),
         ..machine.clone()
-    }));
+    };
+    if let Some(system) = contender.system.heating.machine_mut() {
+        *system = longer;
+    }
     Ok(contender)
 }
 

@@ -7,7 +7,7 @@ use super::pair::{CHOICE, Compared, Pair};
 use crate::heatpump::ColdSide;
 use crate::problem::Problems;
 use crate::source::Memory;
-use crate::year::{Heating, MachineSystem};
+use crate::year::MachineSystem;
 
 /// Sizes looked at, as multiples of the design heat load. A choice of ours.
 const SIZES: (f64, f64) = (0.5, 2.0);
@@ -62,7 +62,7 @@ pub struct MachineSizes {
 /// # Errors
 /// When a year cannot be run or billed.
 pub fn machine_sizes(pair: &Pair) -> Result<Option<MachineSizes>, Problems> {
-    if !matches!(pair.choice().system.heating, Heating::HeatPump(_)) {
+    if pair.choice().system.heating.machine().is_none() {
         return Ok(None);
     }
     let choice = pair.choice();
@@ -88,7 +88,7 @@ pub fn machine_sizes(pair: &Pair) -> Result<Option<MachineSizes>, Problems> {
 
 fn size(compared: &Compared, load_kw: f64, mild_kw: f64) -> Option<MachineSize> {
     let contender = &compared.case.contenders[CHOICE];
-    let Heating::HeatPump(system) = &contender.system.heating else {
+    let Some(system) = contender.system.heating.machine() else {
         return None;
     };
     let [today, outcome] = &compared.outcomes;

@@ -5,11 +5,12 @@ use std::ops::Range;
 use rust_decimal::Decimal;
 use rust_decimal::prelude::ToPrimitive;
 
-use super::case::{Account, Contender};
+use super::case::{Account, Beside, Contender};
 use crate::bill::{Bill, price_reading};
 use crate::lifetime::Running;
 use crate::problem::Problems;
 use crate::tariff::Reading;
+use crate::units::Fuel;
 use crate::year::{Sums, Totals};
 
 /// Money of a mean year, in currency units.
@@ -185,7 +186,60 @@ pub(super) fn price(
         costs.fuel_standing = standing(&fuel) / count;
         add(&mut costs, years, &fuel);
     }
+    for Beside { account, reading } in &contender.beside {
+        let bill = bill(contender, account, reading)?;
+        let share = if account.tariff.fuel == Fuel::Electricity {
+            costs.electricity_energy += energy(&bill) / count;
+            costs.electricity_standing += standing(&bill) / count;
+            &mut costs.electricity
+        } else {
+            costs.fuel_energy += energy(&bill) / count;
+            costs.fuel_standing += standing(&bill) / count;
+            &mut costs.fuel
+        };
+        *share += number(bill.total()) / count;
+        add(&mut costs, years, &bill);
+    }
     Ok(costs)
+}
+
+/// The bills of one account over all years.
+#[derive(Debug, Clone, PartialEq)]
+pub struct AccountBill {
+    /// What people call the tariff.
+    pub tariff: String,
+    /// What it sells.
+    pub fuel: Fuel,
+    /// Every line, by period.
+    pub bill: Bill,
+}
+
+/// What a household would find in its letter box: the bills of every account of a system.
+///
+/// # Errors
+/// When a reading is not a number or below 0.
+pub fn bills(contender: &Contender, outcome: &Outcome) -> Result<Vec<AccountBill>, Problems> {
+    let heating = [
+        (Some(&contender.electricity), Some(&outcome.electricity)),
+        (contender.fuel.as_ref(), outcome.fuel.as_ref()),
+    ];
+    let heating = heating
+        .into_iter()
+        .filter_map(|(account, reading)| account.zip(reading));
+    let beside = contender
+        .beside
+        .iter()
+        .map(|beside| (&beside.account, &beside.reading));
+    heating
+        .chain(beside)
+        .map(|(account, reading)| {
+            Ok(AccountBill {
+                tariff: account.tariff.label.clone(),
+                fuel: account.tariff.fuel,
+                bill: bill(contender, account, reading)?,
+            })
+        })
+        .collect()
 }
 
 fn bill(contender: &Contender, account: &Account, reading: &Reading) -> Result<Bill, Problems> {

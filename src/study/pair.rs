@@ -77,6 +77,10 @@ impl Pair {
         let outcome = |contender: usize| match again {
             None => Ok(self.outcomes[contender].clone()),
             Some(Again::Everyone) => case.run_one(&case.contenders[contender], None),
+            // Another price or carbon is another year where they decide what runs.
+            Some(_) if case.contenders[contender].system.heating.follows_signals() => {
+                case.run_one(&case.contenders[contender], None)
+            }
             Some(Again::Choice) if contender == CHOICE => {
                 case.run_one(&case.contenders[contender], None)
             }

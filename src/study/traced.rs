@@ -5,7 +5,7 @@ use crate::heatpump::cycle::{Cycle, CycleInputs};
 use crate::heatpump::{ColdSide, Delivered, Duty, Exact};
 use crate::problem::{Place, Problem, Problems};
 use crate::refrigerant::Equation;
-use crate::year::{DutyKind, Heating, Ledger, Probe, Row, State, run, step};
+use crate::year::{DutyKind, Ledger, Probe, Row, State, run, step};
 
 /// Which hour is meant.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -78,7 +78,7 @@ pub fn trace(case: &Case, contender: &Contender, wanted: Wanted) -> Result<Trace
     let mut watch = Watch::default();
     let row = step(hour, site, system, plan, &mut state, &mut watch);
     let mut duties = Vec::with_capacity(watch.0.len());
-    if let Heating::HeatPump(machine) = &system.heating {
+    if let Some(machine) = system.heating.machine() {
         for (kind, cold, duty) in watch.0 {
             let exact = machine
                 .machine

@@ -99,6 +99,8 @@ measures! {
     /// Thermal resistance of one metre of borehole.
     BoreholeResistance, "a borehole resistance", m_k_per_w, from_m_k_per_w, "0.10 m K/W",
         ["m K/W" = 1.0; "mK/W" = 1.0; "K m/W" = 1.0;];
+    /// A mass.
+    Mass, "a mass", kg, from_kg, "0.9 kg", ["kg" = 1.0; "g" = 0.001; "lb" = 0.453_592_37;];
     /// Electric current.
     Current, "an electric current", a, from_a, "16 A", ["A" = 1.0;];
     /// Mass flow.
@@ -178,6 +180,7 @@ mod tests {
         check::<Diffusivity>();
         check::<LoopResistance>();
         check::<BoreholeResistance>();
+        check::<Mass>();
         check::<Current>();
         check::<MassFlow>();
         check::<VolumeFlow>();

@@ -5,6 +5,7 @@
 //! each hour, and hands each [`Row`] to a [`Sink`]. A run can be stopped and resumed at any hour: two half years with
 //! the state carried over are the year.
 
+mod hybrid;
 mod ledger;
 mod metered;
 mod row;
@@ -14,11 +15,11 @@ mod system;
 mod totals;
 
 pub use ledger::Ledger;
-pub use metered::Metered;
+pub use metered::{Household, Metered};
 pub use row::{COLUMNS, Column, Flags, Row, Sums};
-pub use site::{Plan, Recovery, Signal, Site};
+pub use site::{OwnGeneration, Plan, Recovery, Signal, Site};
 pub use step::{DutyKind, Probe, Unwatched, run, step};
-pub use system::{Heating, MachineSystem, State, System};
+pub use system::{Heating, HybridSystem, MachineSystem, State, System};
 pub use totals::Totals;
 
 /// Takes the rows of a run.

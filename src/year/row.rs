@@ -254,9 +254,12 @@ impl Sums {
         )
     }
 
-    /// With all auxiliaries (H4).
+    /// With all auxiliaries (H4); pump and fan of a boiler beside the machine belong to the boiler's heat.
     pub fn spf_h4(&self) -> Option<f64> {
-        self.spf(self.backup_kwh + self.immersion_kwh, self.electricity_kwh())
+        self.spf(
+            self.backup_kwh + self.immersion_kwh,
+            self.electricity_kwh() - self.heater_electricity_kwh,
+        )
     }
 
     fn spf(&self, electric_heat_kwh: f64, electricity_kwh: f64) -> Option<f64> {

@@ -33,6 +33,47 @@ pub struct Signal {
     pub price: Vec<f64>,
     /// Carbon factor, kg CO2e/kWh.
     pub carbon_kg: Vec<f64>,
+    /// Own generation that the household leaves over, where there is any.
+    pub own: Option<OwnGeneration>,
+}
+
+/// What the home makes and its household does not use in the same hour.
+#[derive(Debug, Clone, PartialEq)]
+pub struct OwnGeneration {
+    /// Left over in each hour, kWh.
+    pub spare_kwh: Vec<f64>,
+    /// What would be paid for feeding a kilowatt-hour back in each hour, and is forgone when it is used.
+    pub price: Vec<f64>,
+}
+
+impl Signal {
+    /// A signal without own generation.
+    pub fn bought(price: Vec<f64>, carbon_kg: Vec<f64>) -> Self {
+        Self {
+            price,
+            carbon_kg,
+            own: None,
+        }
+    }
+
+    /// How much of an amount (kWh) in an hour is bought, and what the rest forgoes.
+    fn parts(&self, hour: usize, kwh: f64) -> (f64, f64) {
+        self.own.as_ref().map_or((kwh, 0.0), |own| {
+            let used_kwh = kwh.min(own.spare_kwh[hour]);
+            (kwh - used_kwh, used_kwh * own.price[hour])
+        })
+    }
+
+    /// What an amount (kWh) costs in an hour: own generation first, at what feeding it back would have paid.
+    pub fn cost(&self, hour: usize, kwh: f64) -> f64 {
+        let (bought_kwh, forgone) = self.parts(hour, kwh);
+        bought_kwh * self.price[hour] + forgone
+    }
+
+    /// Carbon of an amount (kWh) in an hour, kg CO2e. Own generation counts none, and what is fed back earns none.
+    pub fn carbon(&self, hour: usize, kwh: f64) -> f64 {
+        self.parts(hour, kwh).0 * self.carbon_kg[hour]
+    }
 }
 
 /// How rooms that were let cool are warmed up again before a higher set point is due.
@@ -78,8 +119,12 @@ impl Recovery {
 pub struct Plan {
     /// Indoor set point, °C.
     pub set_point_c: Vec<f64>,
+    /// What the household asked for, °C, where the set points are shifted from it: rooms are short of heat against this.
+    pub asked_c: Option<Vec<f64>>,
     /// The backup heater only keeps the rooms above this, °C.
     pub backup_below_c: Vec<f64>,
+    /// How much hotter than its set point the hot-water store is made in an hour, K; nothing where it is never shifted.
+    pub store_shift_k: Option<Vec<f64>>,
     /// The warm-up before a higher set point; none when the set point is the same all day.
     pub recovery: Option<Recovery>,
     /// Rooms are aired from a few kelvins above this, °C: the highest set point.

@@ -3,6 +3,7 @@
 use std::ops::Range;
 
 use super::Sink;
+use super::hybrid::{Asked, hybrid_hour};
 use super::row::{Flags, Row};
 use super::site::{Plan, Site};
 use super::system::{Heating, MachineSystem, State, System};
@@ -13,9 +14,6 @@ use crate::home::{Control, Home, StoreStep, Tapped, WaterTemperatures};
 
 /// Rooms this much below the set point at the end of an hour are short of heat, K. A choice of ours: about what people notice.
 const SHORT_K: f64 = 1.0;
-
-/// Return to a boiler while it makes hot water, °C. Common practice, no source.
-const BOILER_WATER_RETURN_C: f64 = 55.0;
 
 /// A heat that is short by less than this share is short by rounding only.
 const ROUNDING: f64 = 1e-9;
@@ -91,7 +89,11 @@ pub fn step<P: Probe>(
     };
 
     // What is asked: hot water by the clock, the rooms by their set point.
-    let water = draw(home, &site.civil[hour], state, &mut row);
+    let shift_k = plan
+        .store_shift_k
+        .as_ref()
+        .map_or(0.0, |column| column[hour]);
+    let water = draw(home, &site.civil[hour], shift_k, state, &mut row);
     let reach = |target_c| {
         home.fabric
             .heat_to_reach_kwh(state.room_c, target_c, outdoor_c, gains_kw)
@@ -136,6 +138,24 @@ pub fn step<P: Probe>(
         } => {
             boiler_hour(boiler, *fixed_flow_c, home, &water, &rooms, &mut row);
         }
+        Heating::Hybrid(hybrid) => {
+            let offer = hybrid.machine.source.offer(hour, outdoor_c, &state.ground);
+            let cold = ColdSide {
+                open_c: offer.open_c,
+                k_per_kw: offer.k_per_kw,
+                relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
+            };
+            let asked = Asked {
+                hour,
+                plan,
+                home,
+                cold: &cold,
+                water: &water,
+                rooms: &rooms,
+            };
+            hybrid_hour(hybrid, &asked, &mut row, probe);
+            ground_hour(hour, &hybrid.machine, state, &mut row);
+        }
         Heating::DirectElectric { output_kw } => {
             row.heater_water_kwh = water.wanted_kwh.min(*output_kw);
             row.heater_space_kwh = rooms.wanted_kw.min(output_kw - row.heater_water_kwh);
@@ -157,34 +177,42 @@ pub fn step<P: Probe>(
     row.fabric_loss_kwh = room.loss_kwh;
     row.room_stored_kwh = room.stored_kwh;
     row.aired_kwh = room.aired_kwh;
-    row.flags |= Flags::SHORT.when(room.end_c < set_point_c - SHORT_K);
+    let asked_c = plan
+        .asked_c
+        .as_ref()
+        .map_or(set_point_c, |column| column[hour]);
+    row.flags |= Flags::SHORT.when(room.end_c < asked_c - SHORT_K);
 
     // What it cost.
-    let electricity_kwh = row.electricity_kwh();
-    row.energy_cost = electricity_kwh * row.electricity_price
-        + row.fuel_price.map_or(0.0, |price| row.fuel_kwh * price);
-    row.carbon_kg = electricity_kwh * plan.electricity.carbon_kg[hour]
-        + plan
-            .fuel
-            .as_ref()
-            .map_or(0.0, |fuel| row.fuel_kwh * fuel.carbon_kg[hour]);
+    charge_energy(plan, hour, &mut row);
     row
 }
 
+/// Cost and carbon of an hour's energy at the plan's signals.
+pub(super) fn charge_energy(plan: &Plan, hour: usize, row: &mut Row) {
+    let electricity_kwh = row.electricity_kwh();
+    let fuel = plan.fuel.as_ref();
+    row.energy_cost = plan.electricity.cost(hour, electricity_kwh)
+        + fuel.map_or(0.0, |fuel| fuel.cost(hour, row.fuel_kwh));
+    row.carbon_kg = plan.electricity.carbon(hour, electricity_kwh)
+        + fuel.map_or(0.0, |fuel| fuel.carbon(hour, row.fuel_kwh));
+}
+
 /// What the rooms want in an hour.
-struct Rooms {
+#[derive(Clone, Copy)]
+pub(super) struct Rooms {
     /// Heat that holds the set point or leads back to it, as far as the emitters can carry it, kW.
-    wanted_kw: f64,
+    pub wanted_kw: f64,
     /// Heat that keeps them above the point where backup helps, kWh.
-    least_kwh: f64,
+    pub least_kwh: f64,
     /// Their temperature at the beginning of the hour, °C.
-    room_c: f64,
+    pub room_c: f64,
     /// Outdoor air, °C: what a compensation line follows.
-    outdoor_c: f64,
+    pub outdoor_c: f64,
 }
 
 /// Draws an hour's hot water and says what its heater must bring.
-fn draw(home: &Home, clock: &CivilHour, state: &State, row: &mut Row) -> StoreStep {
+fn draw(home: &Home, clock: &CivilHour, shift_k: f64, state: &State, row: &mut Row) -> StoreStep {
     let mut step = StoreStep {
         before_c: state.store.mean_c,
         drawn_kwh: 0.0,
@@ -204,7 +232,7 @@ fn draw(home: &Home, clock: &CivilHour, state: &State, row: &mut Row) -> StoreSt
         cold_c: water.cold_c[clock.month0()],
     };
     match &water.store {
-        Some(store) => step = store.step(&state.store, &tapped, clock),
+        Some(store) => step = store.shifted(shift_k).step(&state.store, &tapped, clock),
         None => {
             step.drawn_kwh = tapped.kwh;
             step.wanted_kwh = tapped.kwh;
@@ -244,7 +272,7 @@ fn ground_hour(hour: usize, system: &MachineSystem, state: &mut State, row: &mut
 }
 
 /// A heat pump: a block of hot water first, the rooms in what is left of the hour, backup for what is missing.
-fn heat_pump_hour<P: Probe>(
+pub(super) fn heat_pump_hour<P: Probe>(
     system: &MachineSystem,
     home: &Home,
     cold: &ColdSide,
@@ -433,7 +461,7 @@ fn cop(heat_kwh: f64, electricity_kwh: f64) -> Option<f64> {
 }
 
 /// A boiler: hot water first, then the rooms, its efficiency following the water that comes back.
-fn boiler_hour(
+pub(super) fn boiler_hour(
     boiler: &Boiler,
     fixed_flow_c: Option<f64>,
     home: &Home,
@@ -442,7 +470,11 @@ fn boiler_hour(
     row: &mut Row,
 ) {
     row.heater_water_kwh = water.wanted_kwh.min(boiler.output_kw);
-    row.fuel_kwh = row.heater_water_kwh / boiler.gross_efficiency(BOILER_WATER_RETURN_C);
+    let has_store = home
+        .hot_water
+        .as_ref()
+        .is_some_and(|water| water.store.is_some());
+    row.fuel_kwh = row.heater_water_kwh / boiler.water_efficiency(has_store);
     row.heater_space_kwh = rooms.wanted_kw.min(boiler.output_kw - row.heater_water_kwh);
     if row.heater_space_kwh > 0.0 {
         let supply = home

@@ -1,6 +1,6 @@
 //! A system: a home and what heats it; and what carries over from hour to hour.
 
-use crate::heater::Boiler;
+use crate::heater::{Boiler, HybridRule};
 use crate::heatpump::HeatPump;
 use crate::home::{Home, StoreState};
 use crate::source::{Memory, Source};
@@ -28,11 +28,60 @@ pub enum Heating {
         /// Flow temperature it is set to, °C; it follows the load where there is none.
         fixed_flow_c: Option<f64>,
     },
+    /// A heat pump with a boiler beside it.
+    Hybrid(Box<HybridSystem>),
     /// Resistance heating.
     DirectElectric {
         /// Greatest output, kW.
         output_kw: f64,
     },
+}
+
+impl Heating {
+    /// Its machine, where it has one.
+    pub fn machine(&self) -> Option<&MachineSystem> {
+        match self {
+            Self::HeatPump(machine) => Some(machine),
+            Self::Hybrid(hybrid) => Some(&hybrid.machine),
+            Self::Boiler { .. } | Self::DirectElectric { .. } => None,
+        }
+    }
+
+    /// The same, to be changed.
+    pub fn machine_mut(&mut self) -> Option<&mut MachineSystem> {
+        match self {
+            Self::HeatPump(machine) => Some(machine),
+            Self::Hybrid(hybrid) => Some(&mut hybrid.machine),
+            Self::Boiler { .. } | Self::DirectElectric { .. } => None,
+        }
+    }
+
+    /// Its boiler, where it has one.
+    pub fn boiler(&self) -> Option<&Boiler> {
+        match self {
+            Self::Boiler { boiler, .. } => Some(boiler),
+            Self::Hybrid(hybrid) => Some(&hybrid.boiler),
+            Self::HeatPump(_) | Self::DirectElectric { .. } => None,
+        }
+    }
+
+    /// Whether prices or carbon decide what runs, so that another price makes another year.
+    pub fn follows_signals(&self) -> bool {
+        matches!(self, Self::Hybrid(hybrid) if hybrid.rule.follows_signals())
+    }
+}
+
+/// A heat pump with a boiler beside it, one of which serves each hour.
+#[derive(Debug, Clone)]
+pub struct HybridSystem {
+    /// The heat pump.
+    pub machine: MachineSystem,
+    /// The boiler.
+    pub boiler: Boiler,
+    /// Flow temperature the boiler is set to, °C; it follows the load where there is none.
+    pub fixed_flow_c: Option<f64>,
+    /// Which of them serves an hour.
+    pub rule: HybridRule,
 }
 
 /// A heat pump with its source, backup, immersion heater and circuit pump.
@@ -64,6 +113,13 @@ pub struct State {
 }
 
 impl State {
+    /// Puts rooms and store to other temperatures (°C), no block of hot water under way; what else lasts stays.
+    pub fn place(&mut self, room_c: f64, store_c: f64) {
+        self.room_c = room_c;
+        self.store.mean_c = store_c;
+        self.store.charging = false;
+    }
+
     /// Rooms and store at their set points.
     pub fn at_rest(system: &System, set_point_c: f64) -> Self {
         let store = system.home.hot_water.as_ref().and_then(|water| water.store);
