@@ -88,9 +88,7 @@ pub fn machine_sizes(pair: &Pair) -> Result<Option<MachineSizes>, Problems> {
 
 fn size(compared: &Compared, load_kw: f64, mild_kw: f64) -> Option<MachineSize> {
     let contender = &compared.case.contenders[CHOICE];
-    let Some(system) = contender.system.heating.machine() else {
-        return None;
-    };
+    let system = contender.system.heating.machine()?;
     let [today, outcome] = &compared.outcomes;
     let sums = outcome.mean_sums();
     let heat_kwh = sums.space_heat_kwh() + sums.water_heat_kwh();
