@@ -28,7 +28,7 @@ Examples:
   winterledger study                                     the built-in demonstration home
   winterledger study briefs/terrace.toml --out out       study.json and pictures
   winterledger study --choice \"Air source, larger radiators\"
-  winterledger study --over \"heat loss\" --against \"design flow temperature\" --out out
+  winterledger study --over \"heat loss\" --against \"design flow temperature\" --out out --force
 
 Levers: electricity rate, gas rate, heat loss, design flow temperature, indoor temperature,
 hot water, rated output, share of laboratory performance kept, loop resistance, loop length,

@@ -1,6 +1,6 @@
 //! Markdown into blocks that page and paper are set from: the few kinds that the sentences use, and nothing else.
 
-use pulldown_cmark::{Alignment, Event, Options, Parser, Tag, TagEnd};
+use pulldown_cmark::{Alignment, Event, Options, Parser, Tag, TagEnd, TextMergeStream};
 
 /// A piece of text of one look.
 #[derive(Debug, Clone, Default, PartialEq, Eq)]
@@ -38,7 +38,8 @@ pub(super) enum Block {
 /// Reads Markdown. What the sentences have no use for (raw HTML, code, quotes) is left out, its text kept.
 pub(super) fn blocks(markdown: &str) -> Vec<Block> {
     let mut reader = Reader::default();
-    for event in Parser::new_ext(markdown, Options::ENABLE_TABLES) {
+    // Merged, so that a date is one text and its hyphens are not taken for minus signs.
+    for event in TextMergeStream::new(Parser::new_ext(markdown, Options::ENABLE_TABLES)) {
         reader.take(event);
     }
     reader.blocks
