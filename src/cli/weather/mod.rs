@@ -28,6 +28,10 @@ const LONG_BYTES: u64 = 64 << 20;
 /// Several files are taken as several years. What a file does not say is detected; what cannot be detected gets a default
 /// and a finding.
 #[derive(Debug, clap::Args)]
+#[command(after_help = "\
+Examples:
+  winterledger weather weather_samples/ostrel_plain.csv                       one screen
+  winterledger weather weather_samples/morvane_sound.csv --base 18 --format json  for another program")]
 pub struct Args {
     /// Hourly weather files (CSV, also packed with gzip).
     #[arg(required = true, value_name = "FILE")]
