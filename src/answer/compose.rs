@@ -6,12 +6,12 @@ use super::account::{bill_answers, meter_answers, shifting_answer, signal_gap};
 use super::bills::pair;
 use super::estimate::{
     Assumption, Estimate, GroundShown, HomeUsed, InputFile, MonthAnswer, SystemAnswer, WeatherUsed,
-    YearAnswer,
 };
 use super::home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomsAnswer, StoreAnswer,
 };
 use super::lever::lever_answer;
+use super::weather_years::{succession, year_answers, year_spread};
 use crate::home::Pattern;
 use crate::problem::{Finding, Problems, Severity};
 use crate::signature::{DailyWeather, Signature};
@@ -95,6 +95,8 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
             told.machines.get(i).cloned().flatten(),
         );
         system.rooms = told.rooms.get(i).cloned().flatten();
+        system.by_year = year_answers(case, outcomes, i);
+        system.year_spread = year_spread(case, outcomes, i);
         if contender.pattern != case.contenders[0].pattern {
             let as_today = under_pattern(case, contender, &case.contenders[0].pattern)?;
             let heat_kwh = as_today.mean_sums().space_heat_kwh();
@@ -151,7 +153,12 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         break_even: break_evens,
         currency: case.currency.code().to_owned(),
         carbon_scope: told.carbon_scope.clone(),
-        assumptions: told.assumptions.clone(),
+        assumptions: told
+            .assumptions
+            .iter()
+            .cloned()
+            .chain(succession(case))
+            .collect(),
         findings,
         inputs: told.inputs.clone(),
     })
@@ -282,16 +289,8 @@ fn system(
                 }
             })
             .collect(),
-        by_year: outcome
-            .years
-            .iter()
-            .zip(&costs.by_year)
-            .map(|(year, &cost)| YearAnswer {
-                year: year.year,
-                cost,
-                spf_h4: year.sums.spf_h4(),
-            })
-            .collect(),
+        by_year: Vec::new(),
+        year_spread: None,
         shifting: None,
         meters: meter_answers(contender, outcome),
         bills: None,

@@ -6,6 +6,7 @@ use serde::Serialize;
 
 use super::account::{BillAnswer, MeterAnswer, ShiftingAnswer};
 use super::home::{DesignAnswer, MeteredAnswer, PatternComparison, RoomsAnswer, StoreAnswer};
+use super::weather_years::{YearAnswer, YearSpread};
 use crate::problem::Finding;
 
 /// The comparison of all systems of a brief.
@@ -216,6 +217,9 @@ pub struct SystemAnswer {
     pub monthly: Vec<MonthAnswer>,
     /// Each year of the weather.
     pub by_year: Vec<YearAnswer>,
+    /// How far they lie apart; absent for one year.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub year_spread: Option<YearSpread>,
     /// What shifting does, where the system shifts.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub shifting: Option<ShiftingAnswer>,
@@ -258,18 +262,6 @@ pub struct MonthAnswer {
     pub fuel_kwh: Option<f64>,
     /// Cost.
     pub cost: f64,
-}
-
-/// One year of the weather.
-#[derive(Debug, Clone, PartialEq, Serialize)]
-pub struct YearAnswer {
-    /// Year.
-    pub year: i32,
-    /// Cost.
-    pub cost: f64,
-    /// Seasonal performance factor with all auxiliaries.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub spf_h4: Option<f64>,
 }
 
 /// What one lever would have to be.

@@ -16,15 +16,17 @@ pub mod rating;
 pub mod study;
 pub mod tariff;
 pub mod weather;
+mod weather_years;
 
 pub use account::{BillAnswer, MeterAnswer, MeterMonthAnswer, RunAnswer, ShiftingAnswer};
 pub use compose::{BillsTold, Told, compare_patterns, compose};
 pub use estimate::{
     Assumption, Estimate, GroundShown, HomeUsed, InputFile, LeverAnswer, MonthAnswer, SystemAnswer,
-    WeatherUsed, YearAnswer,
+    WeatherUsed,
 };
 pub use home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomAnswer, RoomsAnswer,
     StoreAnswer,
 };
 pub use lever::short;
+pub use weather_years::{ExtentAnswer, YearAnswer, YearSpread};

@@ -1,5 +1,6 @@
 //! A case: one home's weather, and the systems that could heat it.
 
+use std::ops::Range;
 use std::sync::Arc;
 
 use chrono_tz::Tz;
@@ -7,7 +8,8 @@ use chrono_tz::Tz;
 use super::ageing::Aged;
 use super::fuel_carbon::{Both, CarbonOfFuel};
 use super::lever::Lever;
-use super::outcome::{Outcome, YearOutcome, price};
+use super::outcome::{Costs, Outcome, YearOutcome};
+use super::price::price;
 use crate::bill::Connection;
 use crate::carbon::Leakage;
 use crate::home::Pattern;
@@ -34,6 +36,8 @@ pub struct Case {
     pub contenders: Vec<Contender>,
     /// The levers that were moved, and the contenders before.
     moved: Option<Moved>,
+    /// The only year of the weather that is run, by its place; nothing for all.
+    only: Option<usize>,
 }
 
 /// Levers that stand elsewhere than the brief put them.
@@ -128,7 +132,41 @@ impl Case {
             terms,
             contenders,
             moved: None,
+            only: None,
         }
+    }
+
+    /// The same case run through one year of its weather only, by the year's place from 0; nothing where there is no such year.
+    ///
+    /// Everything that was made for the whole weather is shared, so a draw among the years costs no more than a year's run. The
+    /// year begins with rooms and store at their set points; a buried loop begins it as all years left it.
+    pub fn in_year(&self, place: usize) -> Option<Self> {
+        self.site.years.get(place)?;
+        Some(Self {
+            only: Some(place),
+            ..self.clone()
+        })
+    }
+
+    /// The years of the weather that are run, each with its hours.
+    pub fn years(&self) -> &[(i32, Range<usize>)] {
+        match self.only {
+            Some(place) => self.site.years.get(place..=place).unwrap_or_default(),
+            None => &self.site.years,
+        }
+    }
+
+    /// Prices readings of the years that are run.
+    ///
+    /// # Errors
+    /// When a reading is not a number or below 0.
+    pub(super) fn price(
+        &self,
+        contender: &Contender,
+        electricity: &Reading,
+        fuel: Option<&Reading>,
+    ) -> Result<Costs, Problems> {
+        price(&self.site, self.only, contender, electricity, fuel)
     }
 
     /// The same case with today's system and one choice only, which becomes choice 1; nothing where there is no such choice.
@@ -271,7 +309,7 @@ impl Case {
     /// # Errors
     /// When a bill cannot be made.
     pub fn yearly_costs(&self, contender: &Contender, years: usize) -> Result<Vec<f64>, Problems> {
-        let mut costs = Vec::with_capacity(years + self.site.years.len());
+        let mut costs = Vec::with_capacity(years + self.years().len());
         let mut ground = Memory::default();
         for _ in 0..years {
             if costs.len() >= years {
@@ -307,8 +345,8 @@ impl Case {
             &contender.electricity.meter,
             contender.fuel.as_ref().map(|fuel| &*fuel.meter),
         );
-        let mut years = Vec::with_capacity(site.years.len());
-        for (year, hours) in &site.years {
+        let mut years = Vec::with_capacity(self.years().len());
+        for (year, hours) in self.years() {
             let mut totals = Totals::new(&site.month0);
             let mut fuel_carbon = CarbonOfFuel::new(&site.month0, plan.fuel.as_ref());
             let mut meters = Both(&mut metered, &mut fuel_carbon);
@@ -319,7 +357,7 @@ impl Case {
         let Metered {
             electricity, fuel, ..
         } = metered;
-        let costs = price(contender, &site.years, &electricity, fuel.as_ref())?;
+        let costs = self.price(contender, &electricity, fuel.as_ref())?;
         let outcome = Outcome {
             years,
             electricity,

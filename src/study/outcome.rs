@@ -1,12 +1,8 @@
 //! What a system's years came to.
 
-use std::ops::Range;
-
-use rust_decimal::Decimal;
-use rust_decimal::prelude::ToPrimitive;
-
-use super::case::{Account, Beside, Contender};
-use crate::bill::{Bill, price_reading};
+use super::case::Contender;
+use super::price::bill;
+use crate::bill::Bill;
 use crate::lifetime::Running;
 use crate::problem::Problems;
 use crate::tariff::Reading;
@@ -159,50 +155,6 @@ impl Outcome {
     }
 }
 
-/// Prices readings of all years under a contender's tariffs.
-///
-/// # Errors
-/// When a reading is not a number or below 0.
-pub(super) fn price(
-    contender: &Contender,
-    years: &[(i32, Range<usize>)],
-    electricity: &Reading,
-    fuel: Option<&Reading>,
-) -> Result<Costs, Problems> {
-    let mut costs = Costs {
-        by_year: vec![0.0; years.len()],
-        ..Costs::default()
-    };
-    let count = years.len() as f64;
-    let electricity = bill(contender, &contender.electricity, electricity)?;
-    costs.electricity = number(electricity.total()) / count;
-    costs.electricity_energy = energy(&electricity) / count;
-    costs.electricity_standing = standing(&electricity) / count;
-    add(&mut costs, years, &electricity);
-    if let (Some(account), Some(reading)) = (&contender.fuel, fuel) {
-        let fuel = bill(contender, account, reading)?;
-        costs.fuel = number(fuel.total()) / count;
-        costs.fuel_energy = energy(&fuel) / count;
-        costs.fuel_standing = standing(&fuel) / count;
-        add(&mut costs, years, &fuel);
-    }
-    for Beside { account, reading } in &contender.beside {
-        let bill = bill(contender, account, reading)?;
-        let share = if account.tariff.fuel == Fuel::Electricity {
-            costs.electricity_energy += energy(&bill) / count;
-            costs.electricity_standing += standing(&bill) / count;
-            &mut costs.electricity
-        } else {
-            costs.fuel_energy += energy(&bill) / count;
-            costs.fuel_standing += standing(&bill) / count;
-            &mut costs.fuel
-        };
-        *share += number(bill.total()) / count;
-        add(&mut costs, years, &bill);
-    }
-    Ok(costs)
-}
-
 /// The bills of one account over all years.
 #[derive(Debug, Clone, PartialEq)]
 pub struct AccountBill {
@@ -240,45 +192,4 @@ pub fn bills(contender: &Contender, outcome: &Outcome) -> Result<Vec<AccountBill
             })
         })
         .collect()
-}
-
-fn bill(contender: &Contender, account: &Account, reading: &Reading) -> Result<Bill, Problems> {
-    price_reading(
-        &account.tariff,
-        &account.meter,
-        reading,
-        contender.connection(),
-    )
-}
-
-/// Decimal amounts of a household are far inside what an `f64` holds exactly to the cent.
-fn number(amount: Decimal) -> f64 {
-    amount.to_f64().unwrap_or(f64::NAN)
-}
-
-/// Energy less what is paid for energy fed back.
-fn energy(bill: &Bill) -> f64 {
-    number(bill.energy() + bill.export().unwrap_or_default())
-}
-
-fn standing(bill: &Bill) -> f64 {
-    number(bill.standing() + bill.demand())
-}
-
-fn add(costs: &mut Costs, years: &[(i32, Range<usize>)], bill: &Bill) {
-    let count = years.len() as f64;
-    costs.total += number(bill.total()) / count;
-    costs.energy += energy(bill) / count;
-    costs.standing += standing(bill) / count;
-    if let Some(tax) = bill.tax() {
-        *costs.tax.get_or_insert(0.0) += number(tax) / count;
-    }
-    for month in &bill.months {
-        costs.months[month.month0] += number(month.amount) / count;
-        // A few hours of a UTC year can fall into the civil year beside it: they stay with their weather year.
-        let place = years
-            .partition_point(|(year, _)| *year < month.year)
-            .min(years.len() - 1);
-        costs.by_year[place] += number(month.amount);
-    }
 }

@@ -5,7 +5,7 @@ use rayon::prelude::*;
 use super::case::{Case, Contender};
 use super::lever::{Again, Lever};
 use super::measure::Measure;
-use super::outcome::{Outcome, price};
+use super::outcome::Outcome;
 use crate::lifetime::CashFlow;
 use crate::problem::Problems;
 
@@ -93,9 +93,8 @@ impl Pair {
     /// The same readings with other prices and another carbon factor.
     fn counted_again(&self, case: &Case, contender: usize) -> Result<Outcome, Problems> {
         let was = &self.outcomes[contender];
-        let costs = price(
+        let costs = case.price(
             &case.contenders[contender],
-            &case.site.years,
             &was.electricity,
             was.fuel.as_ref(),
         )?;
