@@ -79,7 +79,8 @@ fn weather_files_state_humidity_over_water() {
         let [dry, dew, stated] = columns.map(|column| row[column].parse::<f64>().unwrap());
         if dry < -3.0 {
             water += 100.0 * relative_humidity_at_dew_point(dry, dew).unwrap() - stated;
-            let over_ice = saturation_pressure_pa(dew).unwrap() / saturation_pressure_pa(dry).unwrap();
+            let over_ice =
+                saturation_pressure_pa(dew).unwrap() / saturation_pressure_pa(dry).unwrap();
             ice += 100.0 * over_ice - stated;
             hours += 1.0;
         }
