@@ -89,6 +89,10 @@ rated_output = \"7 kW\"";
 /// load. Hot water at 50 °C, a sixth to a fifth of the heat. The continental sample is the one we have for inland weather; its hard
 /// days are rarer in the trial's country, so that the air-source figure may come out low. Bores there are drilled for 50 W/m or
 /// less: 160 m for a machine of 9 kW, in sandstone. The loop is in the year that a comparison shows.
+///
+/// First run, as committed before: air source 2.88 to 3.32, met; ground source with all 160 m in one bore 3.11, missed. Its pump
+/// drove 0.64 kg/s through one pipe of 320 m with 254 W, a fifth of all electricity, which is no loop of that trial: bores of such a
+/// length are two, side by side. Second run, the band as it was, written down before it was run: two bores of 80 m, 6 m apart.
 const EXISTING_BUILDING: &str = "
 [home]
 label = \"Detached house\"
@@ -126,7 +130,13 @@ rated_output = \"9 kW\"
 [choice.ground]
 soil = \"sandstone\"
 [[choice.bore]]
-depth = \"160 m\"";
+depth = \"80 m\"
+x = \"0 m\"
+y = \"0 m\"
+[[choice.bore]]
+depth = \"80 m\"
+x = \"6 m\"
+y = \"0 m\"";
     let spf_h3 = sums(EXISTING_BUILDING, "ostrel_plain", choice)
         .spf_h3()
         .unwrap();
