@@ -205,46 +205,6 @@ impl Factor {
     }
 }
 
-/// How electricity's factor changes over the years to come, as a multiplier of its first year.
-#[derive(Debug, Clone, PartialEq)]
-pub enum Trajectory {
-    /// It stays.
-    Constant,
-    /// It falls by the same share of itself every year.
-    Falling {
-        /// Share lost each year, 0 to 1.
-        per_year: f64,
-    },
-    /// Multipliers at years after the first, rising; straight lines between, level after the last.
-    Points(Vec<(f64, f64)>),
-}
-
-impl Trajectory {
-    /// The multiplier a number of years after the first.
-    pub fn at(&self, years: f64) -> f64 {
-        match self {
-            Self::Constant => 1.0,
-            Self::Falling { per_year } => (1.0 - per_year).powf(years),
-            Self::Points(points) => {
-                let mut before = (0.0, 1.0);
-                for &(year, multiplier) in points {
-                    if years <= year {
-                        let span = year - before.0;
-                        let share = if span > 0.0 {
-                            (years - before.0) / span
-                        } else {
-                            1.0
-                        };
-                        return before.1 + (multiplier - before.1) * share;
-                    }
-                    before = (year, multiplier);
-                }
-                before.1
-            }
-        }
-    }
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -322,16 +282,5 @@ mod tests {
         assert_eq!(factor.column(&civil(2)).unwrap(), [0.18, 0.095]);
         let short = factor.column(&civil(3)).unwrap_err();
         assert!(short.to_string().contains("for 1 of 3 hours"), "{short}");
-    }
-
-    #[test]
-    fn trajectories_start_at_one() {
-        assert_eq!(Trajectory::Constant.at(10.0), 1.0);
-        let falling = Trajectory::Falling { per_year: 0.1 };
-        assert!((falling.at(0.0) - 1.0).abs() < 1e-12 && (falling.at(2.0) - 0.81).abs() < 1e-12);
-        let points = Trajectory::Points(vec![(10.0, 0.5), (20.0, 0.2)]);
-        assert!((points.at(5.0) - 0.75).abs() < 1e-12);
-        assert!((points.at(15.0) - 0.35).abs() < 1e-12);
-        assert!((points.at(30.0) - 0.2).abs() < 1e-12);
     }
 }

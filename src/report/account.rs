@@ -8,6 +8,7 @@ use rust_decimal::Decimal;
 use super::table::plain_table;
 use crate::answer::{Estimate, MeterAnswer};
 use crate::bill::{Bill, Charge, Line};
+use crate::locale::MONTHS;
 use crate::study::AccountBill;
 use crate::units::Currency;
 
@@ -92,22 +93,8 @@ pub fn accounts_text(estimate: &Estimate, bills: &[Vec<AccountBill>]) -> String 
 }
 
 fn meter_table(meter: &MeterAnswer) -> String {
-    const NAMES: [&str; 12] = [
-        "January",
-        "February",
-        "March",
-        "April",
-        "May",
-        "June",
-        "July",
-        "August",
-        "September",
-        "October",
-        "November",
-        "December",
-    ];
     let rows = meter.months.iter().map(|month| {
-        let name = NAMES.get(month.month.wrapping_sub(1)).unwrap_or(&"");
+        let name = MONTHS.get(month.month.wrapping_sub(1)).unwrap_or(&"");
         vec![
             (*name).to_owned(),
             format!("{:.0}", month.low_kwh),

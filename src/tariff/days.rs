@@ -4,6 +4,8 @@ use std::fmt;
 
 use chrono::{Datelike, NaiveDate, Weekday};
 
+use crate::locale::MONTHS;
+
 /// Names of the days, Monday first.
 const DAYS: [&str; 7] = [
     "Monday",
@@ -13,21 +15,6 @@ const DAYS: [&str; 7] = [
     "Friday",
     "Saturday",
     "Sunday",
-];
-/// Names of the months.
-const MONTHS: [&str; 12] = [
-    "January",
-    "February",
-    "March",
-    "April",
-    "May",
-    "June",
-    "July",
-    "August",
-    "September",
-    "October",
-    "November",
-    "December",
 ];
 
 /// Days of the week, as seven switches from Monday.
