@@ -344,7 +344,7 @@ pub(super) fn of_file(
     let (raw, mut check) = Document::<raw::Brief>::read(&brief.display().to_string(), &text)?;
     let mut notes = Notes::default();
     let zone = super::read::time_zone(raw.home.as_ref(), &mut check, &mut notes);
-    let weather = super::weather::weather(raw.weather.as_ref(), &folder, &mut check);
+    let weather = super::weather::weather(raw.weather.as_ref(), &folder, &mut check, &mut notes);
     let readings = check.take(read_text(file));
     let today_efficiency = raw
         .today
@@ -352,7 +352,7 @@ pub(super) fn of_file(
         .and_then(|today| check.value(&today.efficiency));
     let found = match (zone, weather, readings) {
         (Some(zone), Some(weather), Some(readings)) => {
-            let facts = super::read::facts(&weather);
+            let facts = super::site::facts(&weather);
             let home = raw.home.as_ref();
             let over = Over {
                 home,

@@ -31,9 +31,11 @@ mod raw;
 mod read;
 mod rooms;
 mod shifting;
+mod site;
 mod supplies;
 mod system;
 mod weather;
+mod weather_table;
 
 pub use bills::BillsMade;
 pub use defaults::{DEFAULTS, Default};

@@ -10,6 +10,7 @@ use super::ground::{
 };
 use super::leaves::{Capital, ColdWater, HeatLossSource, HygieneBy, Line, SetBack};
 use super::lifetime::{LifetimeTable, OutlayTable};
+use super::weather_table::WeatherTable;
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind, TappingProfile, WarmUp};
@@ -27,7 +28,7 @@ pub(super) struct Brief {
     /// The home.
     pub home: Option<Section<Home>>,
     /// The hourly weather.
-    pub weather: Option<Section<Weather>>,
+    pub weather: Option<Section<WeatherTable>>,
     /// Tariffs and carbon.
     pub energy: Option<Section<Energies>>,
     /// What the home uses and makes beside its heating.
@@ -277,35 +278,6 @@ impl crate::document::LeafValue for StoreVolume {
     fn schema() -> schemars::Schema {
         schemars::json_schema!({ "type": "string", "examples": ["200 L", "none"] })
     }
-}
-
-/// The hourly weather.
-#[derive(Debug, Deserialize, JsonSchema)]
-pub(super) struct Weather {
-    /// Hourly file, relative to the brief.
-    pub file: Option<Leaf<String>>,
-    /// Clock of stamps without an offset: "UTC", "-05:00" or "Europe/London".
-    pub time_zone: Option<Leaf<String>>,
-    /// Which end of its hour a stamp marks: "beginning" or "ending".
-    pub stamps: Option<Leaf<String>>,
-    /// Order of day and month where the year comes last: "day-first" or "month-first".
-    pub date_order: Option<Leaf<String>>,
-    /// Column of the time, or of the date when there is a clock_column; by heading or number from 1.
-    pub time_column: Option<Leaf<String>>,
-    /// Column of the time of day.
-    pub clock_column: Option<Leaf<String>>,
-    /// Column of the outdoor temperature.
-    pub temperature_column: Option<Leaf<String>>,
-    /// Unit of the outdoor temperature: "°C", "°F", "K", "tenths of °C" or "tenths of °F".
-    pub temperature_unit: Option<Leaf<String>>,
-    /// Column of the relative humidity.
-    pub humidity_column: Option<Leaf<String>>,
-    /// Column of the global radiation.
-    pub radiation_column: Option<Leaf<String>>,
-    /// Lines to pass over at the beginning.
-    pub skip_lines: Option<Leaf<i64>>,
-    /// Fill gaps of more than a day from the days around them instead of refusing the file.
-    pub fill_longer_gaps: Option<Leaf<bool>>,
 }
 
 /// Tariffs and carbon.

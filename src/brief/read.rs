@@ -4,7 +4,6 @@ use std::collections::HashMap;
 use std::path::Path;
 use std::sync::Arc;
 
-use chrono::Datelike;
 use chrono_tz::Tz;
 use schemars::Schema;
 
@@ -16,20 +15,16 @@ use super::lifetime::terms;
 use super::locale::locale;
 use super::notes::Notes;
 use super::raw;
+use super::site::{facts, used};
 use super::system::{Surroundings, contender};
 use super::weather::weather;
 use super::{defaults, demo};
 use crate::answer::{Assumption, BillsTold, Told};
-use crate::calendar::CivilHour;
 use crate::document::{Check, Document, Section, read_text};
 use crate::locale::Locale;
 use crate::problem::Problems;
 use crate::signature::DailyWeather;
-use crate::source::{AnnualSwing, undisturbed_c};
 use crate::study::{Case, scale_to_fuel};
-use crate::units::{Diffusivity, parse};
-use crate::weather::Weather;
-use crate::year::Site;
 
 /// A brief that can be run.
 #[derive(Debug, Clone)]
@@ -103,31 +98,33 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     }
     let label = raw.home.as_ref().and_then(|home| check.value(&home.label));
     let zone = time_zone(raw.home.as_ref(), check, &mut notes);
-    let weather = weather(raw.weather.as_ref(), folder, check);
-    let site = weather
+    // Meter readings are laid over every hour that was read; what is run are whole years.
+    let weather = weather(raw.weather.as_ref(), folder, check, &mut notes);
+    let used = weather.clone().map(|weather| used(weather, &mut notes));
+    let site = used
         .as_ref()
         .zip(zone)
-        .map(|(weather, zone)| Arc::new(site(weather, zone)));
+        .map(|(used, zone)| Arc::new(used.site(zone)));
     let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
     labels_differ(raw, check);
     let locale = locale(raw.report.as_ref(), check);
 
     // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
-    let facts = weather.as_ref().map_or(
+    let facts = used.as_ref().map_or(
         WeatherFacts {
             design_c: -5.0,
             has_radiation: true,
             main_c: None,
         },
-        facts,
+        |used| facts(&used.weather),
     );
     let mut contenders = Vec::new();
     let mut machines = Vec::new();
     let mut rooms = Vec::new();
     let mut parts_w_per_k = None;
-    let mut findings = weather
+    let mut findings = used
         .as_ref()
-        .map_or_else(Vec::new, |weather| weather.findings.clone());
+        .map_or_else(Vec::new, |used| used.findings.clone());
     if let Some(energy) = &energy {
         findings.extend(energy.supplies().flat_map(|supply| supply.findings.clone()));
     }
@@ -246,58 +243,6 @@ pub(super) fn time_zone(
         );
     }
     zone
-}
-
-fn site(weather: &Weather, zone: Tz) -> Site {
-    let civil = weather.axis.civil(zone);
-    Site {
-        axis: weather.axis,
-        month0: civil
-            .iter()
-            .map(CivilHour::month0)
-            .map(|month0| u8::try_from(month0).unwrap_or(0))
-            .collect(),
-        civil,
-        years: weather.years(),
-        outdoor_c: weather.outdoor_c.clone(),
-        relative_humidity: weather.relative_humidity.clone(),
-        global_w_per_m2: weather.global_w_per_m2.clone(),
-        repaired: weather.repaired.clone(),
-    }
-}
-
-pub(super) fn facts(weather: &Weather) -> WeatherFacts {
-    /// Share of the hours that are colder than the design temperature.
-    const COLDER: f64 = 0.004;
-    let mut sorted = weather.outdoor_c.clone();
-    sorted.sort_by(f64::total_cmp);
-    let place = (COLDER * sorted.len() as f64) as usize;
-    WeatherFacts {
-        design_c: sorted.get(place).copied().unwrap_or(0.0),
-        has_radiation: weather.global_w_per_m2.is_some(),
-        main_c: main_c(weather),
-    }
-}
-
-/// Ground at the depth of a water main in the middle of each month, °C.
-fn main_c(weather: &Weather) -> Option<[f64; 12]> {
-    /// Depth of a water main, m. Common practice, no source.
-    const DEPTH_M: f64 = 1.0;
-    /// Water does not come frozen, °C.
-    const LEAST_C: f64 = 4.0;
-    const HOURS_PER_MONTH: f64 = 8760.0 / 12.0;
-    let wave = AnnualSwing::fit(&weather.outdoor_c)?;
-    let diffusivity = parse::<Diffusivity>(defaults::SOIL_DIFFUSIVITY.value)
-        .ok()?
-        .m2_per_s();
-    // The axis may begin in any month: its first hour stands for the middle of the month it lies in.
-    let first0 = weather.axis.start.month0() as usize;
-    let mut months = [0.0; 12];
-    for i in 0..12 {
-        let hour = (i as f64 + 0.5) * HOURS_PER_MONTH;
-        months[(first0 + i) % 12] = undisturbed_c(&wave, DEPTH_M, diffusivity, hour).max(LEAST_C);
-    }
-    Some(months)
 }
 
 /// Results are named by label: each must be there once.

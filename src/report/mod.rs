@@ -21,6 +21,7 @@ mod sentences;
 mod study;
 mod table;
 mod text;
+mod weather_years;
 
 pub use account::{accounts_text, bill_table};
 pub use error::ReportError;

@@ -4,6 +4,7 @@ use std::fmt::Write as _;
 
 use super::home::home_in_words;
 use super::table::plain_table_within;
+use super::weather_years::weather_years_text;
 use crate::answer::{Estimate, LeverAnswer, SystemAnswer};
 
 /// Width of everything that is printed, characters.
@@ -20,6 +21,9 @@ pub fn estimate_text(estimate: &Estimate, sources: bool) -> String {
         let systems: Vec<_> = today.iter().chain(group).copied().collect();
         // Writing to a String cannot fail.
         let _ = writeln!(text, "{}\n", table(&systems, &estimate.currency));
+        if let Some(years) = weather_years_text(&systems, &estimate.currency) {
+            let _ = writeln!(text, "{years}\n");
+        }
     }
     for choice in &choices {
         let levers = estimate

@@ -6,6 +6,7 @@ use chrono::NaiveDate;
 
 use super::degree_days::{self, Rule};
 use super::distribution::Distribution;
+use super::whole_years::YEAR_SLACK_HOURS;
 use super::{Kind, Weather};
 use crate::problem::{Finding, Severity};
 
@@ -13,8 +14,6 @@ use crate::problem::{Finding, Severity};
 const PERCENTILES: [f64; 9] = [0.004, 0.01, 0.05, 0.10, 0.25, 0.50, 0.75, 0.90, 0.99];
 /// Days shorter than this are the cut ends of a file.
 const WHOLE_DAY_HOURS: usize = 23;
-/// Hours a year may lack and still count as whole: half a day for files that begin or end off midnight.
-const YEAR_SLACK_HOURS: usize = 12;
 /// Real air of one hour differs from the same hour a day before by 2 to 5 K (standard deviation); the mean of many years
 /// hardly at all. Common practice, no source.
 const SMOOTH_K: f64 = 1.0;

@@ -35,6 +35,7 @@ mod time_of_day;
 mod time_stamp;
 mod typical_year;
 mod values;
+mod whole_years;
 mod words;
 mod write;
 mod zone;
@@ -49,10 +50,10 @@ pub use describe::{
     DegreeDays, Description, Spell, YearFigures, coldest_days, describe, unfit_for_peak_load,
 };
 pub use options::{
-    Column, ColumnChoice, DateOrder, MAX_EXPANDED_BYTES, PartColumns, ReadOptions, RepairPolicy,
-    StampMarks, TemperatureUnit,
+    Column, ColumnChoice, DateOrder, Delimiter, Encoding, MAX_EXPANDED_BYTES, PartColumns,
+    ReadOptions, RepairPolicy, StampMarks, TemperatureUnit,
 };
-pub use read::{read, read_all, read_bytes};
+pub use read::{read, read_all, read_all_bytes, read_bytes};
 pub use typical_year::{TypicalYear, typical_year};
 pub use write::to_csv;
 pub use zone::Zone;

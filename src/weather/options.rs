@@ -225,6 +225,58 @@ pub struct PartColumns {
     pub minute: Option<Column>,
 }
 
+impl PartColumns {
+    /// What can be given.
+    pub const ALLOWED: &str = "the columns of year, month, day, hour and perhaps minute";
+
+    /// Columns in the order year, month, day, hour, minute; the last may be left out.
+    pub fn of(columns: &[Column]) -> Option<Self> {
+        let [year, month, day, hour, rest @ ..] = columns else {
+            return None;
+        };
+        (rest.len() <= 1).then(|| Self {
+            year: year.clone(),
+            month: month.clone(),
+            day: day.clone(),
+            hour: hour.clone(),
+            minute: rest.first().cloned(),
+        })
+    }
+}
+
+/// What separates the fields of a row.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct Delimiter(pub u8);
+
+impl FromStr for Delimiter {
+    type Err = String;
+
+    fn from_str(text: &str) -> Result<Self, String> {
+        match (text, text.as_bytes()) {
+            ("tab" | "\\t" | "\t", _) => Ok(Self(b'\t')),
+            (_, &[byte]) if !byte.is_ascii_alphanumeric() && !matches!(byte, b'"' | b'\n') => {
+                Ok(Self(byte))
+            }
+            _ => Err("one character such as ; or |, or tab".to_owned()),
+        }
+    }
+}
+
+/// A text encoding by its WHATWG label.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Encoding(pub String);
+
+impl FromStr for Encoding {
+    type Err = String;
+
+    fn from_str(text: &str) -> Result<Self, String> {
+        match encoding_rs::Encoding::for_label(text.as_bytes()) {
+            Some(encoding) => Ok(Self(encoding.name().to_owned())),
+            None => Err("a WHATWG label such as utf-8, windows-1252 or utf-16le".to_owned()),
+        }
+    }
+}
+
 /// How long a gap may be, and how it is filled.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub struct RepairPolicy {

@@ -52,12 +52,34 @@ pub fn read_bytes(name: &str, bytes: &[u8], options: &ReadOptions) -> Result<Wea
 /// As [`read`], the problems of all files together; also files that cover the same time.
 pub fn read_all(paths: &[PathBuf], options: &ReadOptions) -> Result<Vec<Weather>, Problems> {
     let mut problems = Problems::new();
-    let mut parts = Vec::with_capacity(paths.len());
+    let mut files = Vec::with_capacity(paths.len());
     for path in paths {
-        let name: Arc<str> = Arc::from(path.display().to_string());
+        let bytes = problems.take(contents(path));
+        files.extend(bytes.map(|bytes| (path.display().to_string(), bytes)));
+    }
+    // A file that cannot be opened does not keep what is wrong with the others from being told.
+    let read = problems.take(read_all_bytes(&files, options));
+    problems.or(read.unwrap_or_default())
+}
+
+/// Reads several files as [`read_all`] does from bytes that are at hand already, each with the name that stands for it.
+///
+/// # Errors
+/// As [`read_all`].
+pub fn read_all_bytes<B: AsRef<[u8]>>(
+    files: &[(String, B)],
+    options: &ReadOptions,
+) -> Result<Vec<Weather>, Problems> {
+    let mut problems = Problems::new();
+    let mut parts = Vec::with_capacity(files.len());
+    for (name, bytes) in files {
         let mut findings = Vec::new();
-        let hours =
-            contents(path).and_then(|bytes| on_hours(&name, &bytes, options, &mut findings));
+        let hours = on_hours(
+            &Arc::from(name.as_str()),
+            bytes.as_ref(),
+            options,
+            &mut findings,
+        );
         parts.extend(problems.take(hours).map(|hours| (hours, findings)));
     }
     problems.or(())?;

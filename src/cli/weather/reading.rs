@@ -3,7 +3,9 @@
 use std::str::FromStr;
 
 use crate::problem::{Place, Problem, Problems};
-use crate::weather::{Column, ColumnChoice, PartColumns, ReadOptions, RepairPolicy};
+use crate::weather::{
+    Column, ColumnChoice, Delimiter, Encoding, PartColumns, ReadOptions, RepairPolicy,
+};
 
 /// How to read the files. Columns are named by heading or numbered from 1.
 #[derive(Debug, clap::Args)]
@@ -104,9 +106,11 @@ impl ReadingArgs {
             columns,
             temperature_unit: parsed("--temperature-unit", &self.temperature_unit, &mut problems),
             skip_lines: self.skip_lines,
-            delimiter: self.delimiter(&mut problems),
+            delimiter: parsed::<Delimiter>("--delimiter", &self.delimiter, &mut problems)
+                .map(|delimiter| delimiter.0),
             decimal_comma: self.decimal_comma.then_some(true),
-            encoding: self.encoding.clone(),
+            encoding: parsed::<Encoding>("--encoding", &self.encoding, &mut problems)
+                .map(|encoding| encoding.0),
             missing: self.missing.clone(),
             repair: RepairPolicy {
                 neighbour_hours: self.longest_gap,
@@ -128,44 +132,12 @@ impl ReadingArgs {
             .iter()
             .filter_map(|text| parsed("--part-columns", &Some(text.clone()), problems))
             .collect();
-        match columns.as_slice() {
-            [year, month, day, hour, rest @ ..] if rest.len() <= 1 => Some(PartColumns {
-                year: year.clone(),
-                month: month.clone(),
-                day: day.clone(),
-                hour: hour.clone(),
-                minute: rest.first().cloned(),
-            }),
-            _ => {
-                let found = format!("{} columns", columns.len());
-                refuse(
-                    "--part-columns",
-                    found,
-                    "year,month,day,hour or year,month,day,hour,minute",
-                    problems,
-                );
-                None
-            }
+        let parts = PartColumns::of(&columns);
+        if parts.is_none() {
+            let found = format!("{} columns", columns.len());
+            refuse("--part-columns", found, PartColumns::ALLOWED, problems);
         }
-    }
-
-    fn delimiter(&self, problems: &mut Problems) -> Option<u8> {
-        let text = self.delimiter.as_deref()?;
-        match (text, text.as_bytes()) {
-            ("tab" | "\\t", _) => Some(b'\t'),
-            (_, &[byte]) if !byte.is_ascii_alphanumeric() && byte != b'"' && byte != b'\n' => {
-                Some(byte)
-            }
-            _ => {
-                refuse(
-                    "--delimiter",
-                    format!("\"{text}\""),
-                    "one character such as ; or |, or tab",
-                    problems,
-                );
-                None
-            }
-        }
+        parts
     }
 }
 
