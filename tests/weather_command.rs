@@ -283,3 +283,30 @@ fn both_pictures_are_drawn_beside_each_other() {
     );
     assert_eq!(fs::read_dir(folder.path()).unwrap().count(), 2);
 }
+
+/// The stated limit of a plain file; the file has a hole instead of content, so it takes no room.
+#[test]
+fn a_file_beyond_the_stated_size_is_refused_before_it_is_read() {
+    let folder = tempfile::tempdir().unwrap();
+    let path = folder.path().join("huge.csv");
+    let file = fs::File::create(&path).unwrap();
+    file.set_len(513 << 20).unwrap();
+    let told = stderr(&[path.to_str().unwrap()], 1);
+    assert!(told.contains("at most 512 MiB"), "{told}");
+}
+
+/// Cold spells of several lengths: the mean of a longer run is never below that of the coldest shorter one in it.
+#[test]
+fn cold_spells_of_several_lengths_are_told() {
+    let answer = json(&[GREENSBORO, "--time-zone", "-05:00"]);
+    let spells = answer["coldest_spells"].as_array().unwrap();
+    let days: Vec<_> = spells.iter().map(|s| s["days"].as_u64().unwrap()).collect();
+    assert_eq!(days, [1, 3, 5, 7, 14]);
+    assert_eq!(spells[0]["mean_c"], answer["coldest_day"]["mean_c"]);
+    assert_eq!(spells[1]["mean_c"], answer["coldest_three_days"]["mean_c"]);
+    let means: Vec<_> = spells
+        .iter()
+        .map(|s| s["mean_c"].as_f64().unwrap())
+        .collect();
+    assert!(means.windows(2).all(|w| w[0] <= w[1]), "{means:?}");
+}

@@ -58,6 +58,8 @@ pub struct WeatherAnswer {
     /// The coldest three days in a row.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub coldest_three_days: Option<SpellAnswer>,
+    /// The coldest runs of 1, 3, 5, 7 and 14 days, as far as the file is long enough.
+    pub coldest_spells: Vec<SpellOfDays>,
     /// Hours from each whole degree up to the next.
     pub hours_per_degree: Vec<DegreeAnswer>,
     /// Each weather year.
@@ -94,6 +96,17 @@ pub struct PercentileAnswer {
 /// A cold stretch.
 #[derive(Debug, Clone, PartialEq, Serialize)]
 pub struct SpellAnswer {
+    /// Local time at which it begins.
+    pub from: String,
+    /// Its mean temperature.
+    pub mean_c: f64,
+}
+
+/// The coldest run of a number of days.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct SpellOfDays {
+    /// Days in a row.
+    pub days: usize,
     /// Local time at which it begins.
     pub from: String,
     /// Its mean temperature.
@@ -210,6 +223,15 @@ impl WeatherAnswer {
             coldest_hour: spell(&described.coldest_hour),
             coldest_day: described.coldest_day.as_ref().map(spell),
             coldest_three_days: described.coldest_three_days.as_ref().map(spell),
+            coldest_spells: described
+                .coldest_spells
+                .iter()
+                .map(|(days, spell)| SpellOfDays {
+                    days: *days,
+                    from: spell.from.clone(),
+                    mean_c: spell.mean_c,
+                })
+                .collect(),
             hours_per_degree: described
                 .hours_per_degree
                 .iter()

@@ -14,6 +14,8 @@ use crate::problem::{Finding, Severity};
 const PERCENTILES: [f64; 9] = [0.004, 0.01, 0.05, 0.10, 0.25, 0.50, 0.75, 0.90, 0.99];
 /// Days shorter than this are the cut ends of a file.
 const WHOLE_DAY_HOURS: usize = 23;
+/// Lengths of the cold spells that are told, days: 1, 3 and 5 as design standards look at, and a week and a fortnight.
+pub const SPELL_DAYS: [usize; 5] = [1, 3, 5, 7, 14];
 /// Real air of one hour differs from the same hour a day before by 2 to 5 K (standard deviation); the mean of many years
 /// hardly at all. Common practice, no source.
 const SMOOTH_K: f64 = 1.0;
@@ -88,6 +90,8 @@ pub struct Description {
     pub coldest_day: Option<Spell>,
     /// The coldest three days in a row.
     pub coldest_three_days: Option<Spell>,
+    /// The coldest run of days of each length in [`SPELL_DAYS`] that the file is long enough for.
+    pub coldest_spells: Vec<(usize, Spell)>,
     /// Hours from each whole degree up to the next.
     pub hours_per_degree: Vec<(i32, usize)>,
     /// Annual degree-days.
@@ -138,6 +142,10 @@ pub fn describe(series: &[Weather], bases_c: &[f64]) -> Option<Description> {
         coldest_hour: coldest_hour(series)?,
         coldest_day: coldest_days_of(series, &days, 1),
         coldest_three_days: coldest_days_of(series, &days, 3),
+        coldest_spells: SPELL_DAYS
+            .into_iter()
+            .filter_map(|number| Some((number, coldest_days_of(series, &days, number)?)))
+            .collect(),
         hours_per_degree: spread.per_degree(),
         degree_days,
         by_year,

@@ -47,11 +47,12 @@ use chrono::{DateTime, Datelike, Duration, Months, NaiveDate, Utc};
 pub use adjust::{Adjusted, Adjustment, STANDARD_LAPSE_K_PER_KM};
 pub use degree_days::{Rule, degree_days};
 pub use describe::{
-    DegreeDays, Description, Spell, YearFigures, coldest_days, describe, unfit_for_peak_load,
+    DegreeDays, Description, SPELL_DAYS, Spell, YearFigures, coldest_days, describe,
+    unfit_for_peak_load,
 };
 pub use options::{
-    Column, ColumnChoice, DateOrder, Delimiter, Encoding, MAX_EXPANDED_BYTES, PartColumns,
-    ReadOptions, RepairPolicy, StampMarks, TemperatureUnit,
+    Column, ColumnChoice, DateOrder, Delimiter, Encoding, MAX_EXPANDED_BYTES, MAX_FILE_BYTES,
+    PartColumns, ReadOptions, RepairPolicy, StampMarks, TemperatureUnit,
 };
 pub use read::{read, read_all, read_all_bytes, read_bytes};
 pub use typical_year::{TypicalYear, typical_year};

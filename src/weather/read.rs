@@ -7,7 +7,9 @@ use chrono::DateTime;
 
 use super::hours::{self, Hours};
 use super::words::count;
-use super::{Kind, ReadOptions, Weather, bytes, check, clock, layout, repair, rows, values};
+use super::{
+    Kind, MAX_FILE_BYTES, ReadOptions, Weather, bytes, check, clock, layout, repair, rows, values,
+};
 use crate::air;
 use crate::calendar::HourAxis;
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
@@ -103,16 +105,23 @@ pub fn read_all_bytes<B: AsRef<[u8]>>(
 }
 
 fn contents(path: &Path) -> Result<Vec<u8>, Problems> {
-    std::fs::read(path).map_err(|error| {
+    let refuse = |found: String, allowed: String, remedy: &str| -> Problems {
         let place = Place::file(path.display().to_string());
-        Problem::new(
-            place,
-            format!("cannot be read: {error}"),
-            "a file that can be read",
-            "",
-        )
-        .into()
-    })
+        Problem::new(place, found, allowed, remedy).into()
+    };
+    let unread = |error: std::io::Error| {
+        let found = format!("cannot be read: {error}");
+        refuse(found, "a file that can be read".to_owned(), "")
+    };
+    let length = path.metadata().map_err(unread)?.len();
+    if length > MAX_FILE_BYTES {
+        return Err(refuse(
+            format!("the file is {length} bytes long"),
+            format!("at most {} MiB", MAX_FILE_BYTES >> 20),
+            "give the years in files of their own",
+        ));
+    }
+    std::fs::read(path).map_err(unread)
 }
 
 /// Everything up to hours with holes.

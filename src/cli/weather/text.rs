@@ -99,12 +99,22 @@ fn cold(answer: &WeatherAnswer) -> String {
         design("99"),
         at(&answer.coldest_hour),
     );
-    if let Some(day) = &answer.coldest_day {
-        text += &format!("\n  coldest day {}", at(day));
+    for spell in &answer.coldest_spells {
+        let days = match spell.days {
+            1 => "day".to_owned(),
+            days => format!("{days} days"),
+        };
+        text += &format!(
+            "\n  coldest {days:<7} {:>5.1} from {}",
+            spell.mean_c, spell.from
+        );
     }
-    if let Some(days) = &answer.coldest_three_days {
-        text += &format!("\n  coldest three days {}", at(days));
-    }
+    let shares: Vec<_> = answer
+        .percentiles
+        .iter()
+        .map(|p| format!("{} % {:.1}", p.colder_percent, p.temperature_c))
+        .collect();
+    text += &format!("\n  colder in {}", shares.join(", "));
     text
 }
 
