@@ -185,6 +185,7 @@ const MEANINGS: &[Meaning] = &[
             "datetimeutc",
             "utc",
             "epoch",
+            "ts",
         ],
         allowed: WHEN,
         surer: &["utc"],
@@ -222,6 +223,7 @@ pub(super) fn understand(text: &str) -> Option<Heading> {
             "day" | "dd" | "dom" => Some(Role::Day),
             "hour" | "hr" | "hh" => Some(Role::Hour),
             "minute" | "min" | "mi" => Some(Role::Minute),
+            "yyyymmdd" => Some(Role::Date),
             _ => None,
         };
         if let Some(role) = part {
@@ -351,6 +353,9 @@ mod tests {
             ("Date (MM/DD/YYYY)", Role::Date, "mm/dd/yyyy"),
             ("Time (HH:MM)", Role::Time, "hh:mm"),
             ("Date/Time", Role::Stamp, ""),
+            ("YYYYMMDD", Role::Date, ""),
+            ("   HH", Role::Hour, ""),
+            ("ts", Role::Stamp, ""),
             ("timestamp_utc", Role::Stamp, ""),
             ("Year", Role::Year, ""),
             ("HOUR", Role::Hour, ""),
