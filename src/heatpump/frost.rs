@@ -14,7 +14,8 @@ const AIR_KJ_PER_KG_K: f64 = 1.006;
 /// How far the coil's surface stands towards the refrigerant, as a share of the approach. With 9 K of approach frost
 /// begins at about +5 °C, where it begins in maritime air (methods §9, common practice).
 const SURFACE_SHARE: f64 = 0.6;
-/// Below this surface temperature the whole coil frosts, °C; between it and 0 °C part of it stays wet. Common practice, no source.
+/// Below this surface temperature the whole coil frosts, °C; between it and 0 °C part of it stays wet: `x² (3 − 2x)` of it frosts at
+/// the share x of the way. Common practice, no source.
 const FULL_GROWTH_C: f64 = -4.0;
 /// Loss of output over loss of COP: the US test procedure's 35 °F point has capacity 0.90 and power 0.985 of the
 /// frost-free line, so COP 0.914 (methods §9, \[from memory\]).
@@ -41,7 +42,22 @@ pub struct FrostLoss {
     pub cop: f64,
 }
 
+/// Outdoor temperature above which no coil freezes, °C: it would take an approach of 25 K.
+const FROST_FREE_C: f64 = 15.0;
+/// Up to this approach the coil of air near freezing is at its coldest when the machine runs at its own source temperature, K: beyond
+/// it, one that is throttled to keep its pressure difference at a mild flow is colder still.
+const USUAL_APPROACH_K: f64 = 16.0;
+
 impl Frost {
+    /// Outdoor temperature (°C) above which a coil with an evaporator of a largest approach (K) stays above freezing.
+    pub fn free_above_c(&self, largest_approach_k: f64) -> f64 {
+        if largest_approach_k > USUAL_APPROACH_K {
+            FROST_FREE_C
+        } else {
+            SURFACE_SHARE * largest_approach_k
+        }
+    }
+
     /// Loss at an outdoor temperature, an evaporating temperature and a humidity ratio of the outdoor air (kg/kg).
     pub fn loss(&self, outdoor_c: f64, evaporating_c: f64, humidity_ratio: f64) -> FrostLoss {
         let surface_c = outdoor_c - SURFACE_SHARE * (outdoor_c - evaporating_c);

@@ -138,6 +138,12 @@ impl Map {
         self.spot(source_c, flow_c).input(fraction)
     }
 
+    /// Greatest output anywhere, kW.
+    pub(super) fn greatest_output_kw(&self) -> f64 {
+        let outputs = self.ranges.iter().map(|range| range.greatest_kw);
+        outputs.fold(0.0, f64::max)
+    }
+
     /// Steps to the next source and the next flow node.
     fn strides(&self) -> (usize, usize) {
         (

@@ -13,8 +13,6 @@ const MOST_FROST_STEPS: usize = 12;
 const DRAW_TOLERANCE_K: f64 = 1e-6;
 /// Most steps of that balance: the last half of them halve the bracket, which is enough from any bracket in use.
 const MOST_DRAW_STEPS: usize = 80;
-/// Outdoor temperature above which no coil freezes, °C: it would take an approach of 25 K.
-const FROST_FREE_C: f64 = 15.0;
 /// At what output the machine is asked to run.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) enum Wanted {
@@ -64,11 +62,11 @@ impl Steady {
 }
 
 impl HeatPump {
-    /// Humidity ratio of the outdoor air, or 0 where there is no outdoor coil.
+    /// Humidity ratio of the outdoor air, or 0 where there is no outdoor coil or none that could freeze.
     pub(super) fn moisture(&self, cold: &ColdSide) -> f64 {
         match self.core.source {
             // Above this no coil is near freezing.
-            SourceKind::Air if cold.open_c > FROST_FREE_C => 0.0,
+            SourceKind::Air if cold.open_c > self.core.frost_free_c => 0.0,
             SourceKind::Air => humidity_ratio(cold.open_c, cold.relative_humidity),
             SourceKind::Brine | SourceKind::Water => 0.0,
         }

@@ -8,11 +8,11 @@ What is shared with the program, and nothing else:
 - the inputs: briefs in `year/`, machine sheets, tariffs, weather;
 - what `winterledger machine SHEET --format json` prints as fitted: the sixteen physical parameters, and the error of the
   physics at each tested point, from which the correction field is made anew here. The fit itself is not repeated.
-Everything else is done again: the refrigerant cycle is solved by CoolProp in every hour, to 1e-7 K, without property table and
-without map; frost, cycling, source, emitters, fabric, store, boiler, hybrid rule, clock and bill are written here. Moist air is
+Everything else is done again: machine, cycle and exchangers are solved in every hour, to 1e-7 K, without a map, on CoolProp's
+properties (splines through them that the run holds to 1e-6 of CoolProp itself); frost, cycling, source, emitters, fabric, store, boiler, hybrid rule, clock and bill are written here. Moist air is
 psychrolib's.
 
-    python year.py PROGRAM        # prints the differences and writes year.csv beside this file
+    python year.py PROGRAM        # prints the differences; writes year.csv and year_hours.csv beside this file
 
 Written with CoolProp 8.0.0, psychrolib 2.5.0, NumPy 2, pandas 3, Python 3.11. About two minutes.
 """
@@ -30,6 +30,7 @@ import CoolProp.CoolProp as CP
 import numpy as np
 import pandas as pd
 import psychrolib
+from scipy.interpolate import CubicSpline
 
 HERE = Path(__file__).parent
 K = 273.15
@@ -43,6 +44,20 @@ def number(text):
 
 
 # --- the machine ---------------------------------------------------------------------------------------------------------
+
+
+class Cubic:
+    """A cubic spline over even nodes that answers one number quickly."""
+
+    def __init__(self, at, values):
+        self.low, self.step = at[0], at[1] - at[0]
+        self.pieces = [tuple(map(float, piece)) for piece in CubicSpline(at, values).c.T]
+
+    def __call__(self, at):
+        i = min(max(int((at - self.low) / self.step), 0), len(self.pieces) - 1)
+        a, b, c, d = self.pieces[i]
+        x = at - self.low - i * self.step
+        return ((a * x + b) * x + c) * x + d
 
 
 class Machine:
@@ -82,6 +97,7 @@ class Machine:
             at_m7 = at_2 * p["speed at −7 °C over that at 2 °C"]
             at_m15 = at_m7 * p["speed at −15 °C over that at −7 °C"]
             self.speed_knots = [at_m15, at_m7, at_2, 1.0, p["speed at 15 °C over that at 7 °C"]]
+        self.tabulate()
         self.states = {}
         self.begin = self.superheat + 3.0, 0.6  # approach and speed that the next solution begins from
         self.cop_field = self.greatest_field = self.least_field = lambda *_: 0.0
@@ -112,6 +128,31 @@ class Machine:
 
     # physics
 
+    def tabulate(self):
+        """CoolProp's properties every half kelvin and the isentropic work every kelvin, joined by cubics."""
+        cold, hot = np.arange(-50.0, 41.0, 0.5), np.arange(5.0, self.fluid.T_critical() - K - 5, 0.5)
+        low, high = ([math.log(CP.PropsSI("P", "T", c + K, "Q", q, self.fluid.name())) for c in at] for at, q in ((cold, 1), (hot, 0)))
+        suction, _, _, density, _ = np.array([self.state(te, 45.0) for te in cold]).T
+        liquid = [self.state(-10.0, tc)[2] for tc in hot]
+        self.suction, self.density, self.low = Cubic(cold, suction), Cubic(cold, np.log(density)), Cubic(cold, low)
+        self.liquid, self.high = Cubic(hot, liquid), Cubic(hot, high)
+        hot = hot[1::2]
+        self.work_at = [Cubic(hot, [(s[1] - s[0]) / math.log(s[4]) for tc in hot for s in [self.state(te, tc)]]) for te in cold[::2]]
+        random = np.random.default_rng(1)
+        for te, tc in zip(random.uniform(-35, 20, 200), random.uniform(30, 65, 200)):
+            error = np.abs(np.array(self.quick(te, tc)) / np.array(self.state(te, tc)) - 1).max()
+            assert error < 1e-6, (te, tc, error)
+
+    def quick(self, te, tc):
+        ratio = math.exp(self.high(tc) - self.low(te))
+        suction = self.suction(te)
+        # Lagrange's cubic through the four nearest evaporating temperatures, a kelvin apart.
+        i = min(max(int(te + 50.0), 1), len(self.work_at) - 3)
+        x = te + 50.0 - i
+        weights = -x * (x - 1) * (x - 2) / 6, (x + 1) * (x - 1) * (x - 2) / 2, -(x + 1) * x * (x - 2) / 2, (x + 1) * x * (x - 1) / 6
+        work = sum(w * line(tc) for w, line in zip(weights, self.work_at[i - 1 : i + 3])) * math.log(ratio)
+        return suction, suction + work, self.liquid(tc), math.exp(self.density(te)), ratio
+
     def state(self, te, tc):
         """Suction, isentropic and liquid enthalpy, J/kg; suction density, kg/m³; pressure ratio."""
         fluid = self.fluid
@@ -129,7 +170,7 @@ class Machine:
 
     def per_kilogram(self, te, tc, speed):
         p = self.parameters
-        suction, isentropic, liquid, density, ratio = self.state(te, tc)
+        suction, isentropic, liquid, density, ratio = self.quick(te, tc)
         efficiency = p["peak isentropic efficiency"] * (1 - p.get("penalty away from the best speed", 0.0) * (speed - 0.65) ** 2)
         efficiency /= 1 + p["falloff away from that ratio"] * math.log(ratio / p["pressure ratio at the peak"]) ** 2
         work = (isentropic - suction) / efficiency / 1000
@@ -139,7 +180,7 @@ class Machine:
     def greatest_speed(self, source, flow):
         if self.fixed:
             return 1.0
-        at_35 = np.interp(source, [-15, -7, 2, 7, 15], self.speed_knots)
+        at_35 = float(np.interp(source, [-15, -7, 2, 7, 15], self.speed_knots))
         return at_35 * (1 + self.parameters["speed rise with flow temperature"] * (flow - 35))
 
     def least_speed(self):
@@ -337,6 +378,13 @@ def field(residuals):
     return surface
 
 
+def humidity_ratio(outdoor_c, relative_humidity):
+    """Of air whose relative humidity is over liquid water at all temperatures, as stations state it (ASHRAE equation 6)."""
+    t = outdoor_c + K
+    logarithm = -5.8002206e3 / t + 1.3914993 - 4.8640239e-2 * t + 4.1764768e-5 * t**2 - 1.4452093e-8 * t**3 + 6.5459673 * math.log(t)
+    return psychrolib.GetHumRatioFromVapPres(relative_humidity * math.exp(logarithm), SEA_LEVEL_PA)
+
+
 def standard_humidity_ratio(dry_bulb):
     return psychrolib.GetHumRatioFromTWetBulb(dry_bulb, dry_bulb - 1.0, SEA_LEVEL_PA)
 
@@ -488,7 +536,7 @@ def year(brief, machine, home, weather, zone):
     for hour, (outdoor, humidity, sun) in enumerate(weather[["t", "rh", "g"]].itertuples(index=False)):
         gains = home.gains_kw + home.aperture * sun / 1000
         offer = (outdoor, 0.0) if ground is None else (ground[hour], resistance)
-        moisture = psychrolib.GetHumRatioFromRelHum(outdoor, humidity, SEA_LEVEL_PA) if machine.air else None
+        moisture = humidity_ratio(outdoor, humidity) if machine.air else None
         # Hot water: drawn, lost, then a block at full output when it has fallen by the hysteresis.
         draw = min(home.draws[clock[hour].hour], max((store - home.cold) * home.store_capacity, 0.0))
         lost = home.store_loss * (store - 20.0)
@@ -547,6 +595,7 @@ def year(brief, machine, home, weather, zone):
         row |= {"indoor": room, "store": store}
         rows.append(row)
     frame = pd.DataFrame(rows, index=weather.index)
+    frame[["electricity", "fuel"]] = frame[["electricity", "fuel"]].round(4)  # as they are stored, so that the bill is theirs
     days = clock.normalize().nunique()
     return frame, bill(electricity, frame["electricity"], clock, days), bill(gas, frame["fuel"], clock, days)
 
@@ -610,7 +659,7 @@ def one(name, program, keep):
     if keep:
         frame.to_csv(Path(keep) / f"{name}.csv")
     sums = frame[["space", "water", "electricity", "fuel", "backup"]].sum()
-    return {
+    row = {
         "home": name,
         "space_heat_kwh": sums["space"],
         "hot_water_kwh": sums["water"],
@@ -619,11 +668,12 @@ def one(name, program, keep):
         "backup_kwh": sums["backup"],
         "cost": float(electricity_cost + fuel_cost),
     }
+    return row, frame[["electricity", "fuel"]].add_prefix(f"{name}_").add_suffix("_kwh").reset_index(drop=True)
 
 
 def main(program, keep=None):
     with multiprocessing.Pool() as pool:
-        rows = pool.starmap(one, [(name, program, keep) for name in HOMES])
+        rows, hours = zip(*pool.starmap(one, [(name, program, keep) for name in HOMES]))
     for row in rows:
         told = json.loads(subprocess.run([program, "estimate", HERE / "year" / f"{row['home']}.toml", "--format", "json"], capture_output=True, check=True).stdout)
         system = told["systems"][1]
@@ -632,6 +682,8 @@ def main(program, keep=None):
             theirs = system.get(key) or 0.0
             print(f"  {key:16} {value:12.3f}  program {theirs:12.3f}  {100 * (value / theirs - 1) if theirs else 0:+.4f} %")
     pd.DataFrame(rows).to_csv(HERE / "year.csv", index=False, float_format="%.4f")
+    hours = pd.concat(hours, axis=1)
+    hours.loc[:, hours.any()].to_csv(HERE / "year_hours.csv", index=False, float_format="%.4f")
 
 
 if __name__ == "__main__":
