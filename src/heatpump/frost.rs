@@ -44,20 +44,20 @@ pub struct FrostLoss {
 
 /// Outdoor temperature above which no coil freezes, °C: it would take an approach of 25 K.
 const FROST_FREE_C: f64 = 15.0;
-/// Up to this approach the coil of air near freezing is at its coldest when the machine runs at its own source temperature, K: beyond
-/// it, one that is throttled to keep its pressure difference at a mild flow is colder still.
+/// A coil with a largest approach up to this, K, is coldest at the air's own temperature; one beyond it might freeze in milder air yet,
+/// where a cool flow keeps the evaporator below the air.
 const USUAL_APPROACH_K: f64 = 16.0;
 
-impl Frost {
-    /// Outdoor temperature (°C) above which a coil with an evaporator of a largest approach (K) stays above freezing.
-    pub fn free_above_c(&self, largest_approach_k: f64) -> f64 {
-        if largest_approach_k > USUAL_APPROACH_K {
-            FROST_FREE_C
-        } else {
-            SURFACE_SHARE * largest_approach_k
-        }
+/// Outdoor temperature above which a coil with a largest approach (K) stays above freezing, °C.
+pub fn frost_free_above_c(largest_approach_k: f64) -> f64 {
+    if largest_approach_k > USUAL_APPROACH_K {
+        FROST_FREE_C
+    } else {
+        SURFACE_SHARE * largest_approach_k
     }
+}
 
+impl Frost {
     /// Loss at an outdoor temperature, an evaporating temperature and a humidity ratio of the outdoor air (kg/kg).
     pub fn loss(&self, outdoor_c: f64, evaporating_c: f64, humidity_ratio: f64) -> FrostLoss {
         let surface_c = outdoor_c - SURFACE_SHARE * (outdoor_c - evaporating_c);
