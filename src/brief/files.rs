@@ -9,6 +9,7 @@ use sha2::{Digest as _, Sha256};
 
 use super::demo;
 use crate::answer::InputFile;
+use crate::limits::{LARGEST_DATA, read_at_most};
 use crate::problem::{Place, Problem, Problems};
 
 /// Where named files come from, and which of them were read.
@@ -25,9 +26,6 @@ enum Root {
     /// The demonstration files in the binary, by their path from the top of the repository.
     Embedded(&'static str),
 }
-
-/// Largest file that a brief may name, bytes: thirty years of minutes would be smaller.
-const LARGEST: u64 = 512 * 1024 * 1024;
 
 impl Folder {
     /// A folder of the disk.
@@ -97,15 +95,9 @@ impl Folder {
                 if !facts.is_file() {
                     return Err(refuse("is not a file".to_owned(), remedy));
                 }
-                if facts.len() > LARGEST {
-                    return Err(refuse(
-                        format!("is {} bytes long", facts.len()),
-                        "at most 512 MiB are read",
-                    ));
-                }
-                fs::read(&path)
+                read_at_most(&path, LARGEST_DATA)
                     .map(Cow::Owned)
-                    .map_err(|error| refuse(format!("cannot be read: {error}"), remedy))?
+                    .map_err(|beyond| refuse(beyond.found, &beyond.allowed))?
             }
         };
         self.note(name, &content);
