@@ -178,13 +178,16 @@ fn drawn() -> impl Strategy<Value = Drawn> {
         air(),
     )
         .prop_map(|(home, electricity, gas, today, first, second, third)| {
-            let choices = [first, second, third].into_iter().enumerate().map(|(i, text)| {
-                text.replacen(
-                    "[[choice]]\n",
-                    &format!("[[choice]]\nlabel = \"Choice {i}\"\n"),
-                    1,
-                )
-            });
+            let choices = [first, second, third]
+                .into_iter()
+                .enumerate()
+                .map(|(i, text)| {
+                    text.replacen(
+                        "[[choice]]\n",
+                        &format!("[[choice]]\nlabel = \"Choice {i}\"\n"),
+                        1,
+                    )
+                });
             Drawn {
                 home,
                 electricity,
