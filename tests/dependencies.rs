@@ -163,6 +163,8 @@ fn every_dependency_has_its_reason() {
     let table = text.split("## Dependencies and why").nth(1).unwrap();
     let explained: BTreeSet<String> = table
         .lines()
+        .skip_while(|line| !line.starts_with('|'))
+        .take_while(|line| line.starts_with('|'))
         .filter(|line| line.starts_with("| `"))
         .flat_map(|line| {
             let cell = line.trim_start_matches('|').split('|').next().unwrap();

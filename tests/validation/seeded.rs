@@ -5,8 +5,8 @@ use std::path::Path;
 
 use winterledger::fault::{Fault, seed};
 
-use crate::ROOMS;
 use crate::table::Row;
+use crate::{ROOMS, TURN};
 
 /// The part of the page whose rows are looked at for a trap.
 fn watchers(fault: Fault) -> fn() -> Vec<Row> {
@@ -42,6 +42,7 @@ fn red(rows: &[Row]) -> Vec<&str> {
 /// One test, because a fault is switched on for all threads. `UPDATE_VALIDATION=1` writes which rows went red.
 #[test]
 fn every_seeded_fault_turns_a_row_red() {
+    let _turn = TURN.lock();
     let mut text = String::from("| fault put in | rows that go red |\n|---|---|\n");
     let mut unnoticed = Vec::new();
     for fault in Fault::ALL {
