@@ -9,7 +9,7 @@ use crate::table::Row;
 use crate::{ROOMS, TURN};
 
 /// The part of the page whose rows are looked at for a trap.
-fn watchers(fault: Fault) -> fn() -> Vec<Row> {
+fn watchers(fault: Fault) -> (&'static str, fn() -> Vec<Row>) {
     let title = match fault {
         Fault::OneFlowForBothDuties
         | Fault::BaseForPeak
@@ -29,7 +29,7 @@ fn watchers(fault: Fault) -> fn() -> Vec<Row> {
         Fault::ScopesMixed => "Carbon",
         Fault::HourEndingStamps => "Weather: degree-days and typical year",
     };
-    ROOMS.iter().find(|(room, _)| *room == title).unwrap().1
+    *ROOMS.iter().find(|(room, _)| *room == title).unwrap()
 }
 
 fn red(rows: &[Row]) -> Vec<&str> {
@@ -44,15 +44,19 @@ fn red(rows: &[Row]) -> Vec<&str> {
 fn every_seeded_fault_turns_a_row_red() {
     let _turn = TURN.lock();
     let mut text = String::from("| fault put in | rows that go red |\n|---|---|\n");
-    let mut unnoticed = Vec::new();
+    let (mut unnoticed, mut green) = (Vec::new(), Vec::new());
     for fault in Fault::ALL {
-        let rows = watchers(fault);
+        let (room, rows) = watchers(fault);
         seed(None);
-        assert!(
-            red(&rows()).is_empty(),
-            "red without a fault: {:?}",
-            red(&rows())
-        );
+        if !green.contains(&room) {
+            let rows = rows();
+            assert!(
+                red(&rows).is_empty(),
+                "red without a fault: {:?}",
+                red(&rows)
+            );
+            green.push(room);
+        }
         seed(Some(fault));
         let found = rows();
         seed(None);
