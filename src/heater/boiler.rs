@@ -2,6 +2,7 @@
 
 use super::efficiency::GrossEfficiency;
 use super::flue::Combustion;
+use crate::fault::{self, Fault};
 use crate::units::Fuel;
 
 /// Flue gas leaves this much warmer than the water comes back, K: 2 to 10 K, methods §6 \[from memory\].
@@ -75,7 +76,14 @@ impl Boiler {
             BoilerEfficiency::FollowingReturn {
                 combustion,
                 field_factor,
-            } => field_factor * combustion.gross_efficiency(return_c + FLUE_APPROACH_K),
+            } => {
+                let kept = if fault::on(Fault::IdealBoiler) {
+                    1.0
+                } else {
+                    field_factor
+                };
+                kept * combustion.gross_efficiency(return_c + FLUE_APPROACH_K)
+            }
         }
     }
 

@@ -1,9 +1,11 @@
 //! How each lever acts on the contenders of a case.
 
+use crate::fault::{self, Fault};
 use std::sync::Arc;
 
 use super::case::{Account, Contender};
 use super::lever::{Again, Lever};
+use crate::home::Emitters;
 use crate::problem::{Place, Problem, Problems};
 use crate::source::Source;
 use crate::units::Fuel;
@@ -55,6 +57,17 @@ impl Lever {
                 for contender in contenders {
                     let fabric = &mut contender.system.home.fabric;
                     *fabric = fabric.with_heat_loss(fabric.heat_loss_w_per_k() * value);
+                    if fault::on(Fault::EmittersResized) {
+                        let held = contender.system.home.emitters;
+                        let load_kw = held.design_load_kw() * value;
+                        contender.system.home.emitters = Emitters::of_groups(
+                            held.groups(),
+                            load_kw,
+                            contender.indoor_c,
+                            held.greatest_flow_c(),
+                        )
+                        .unwrap_or(held);
+                    }
                 }
             }
             Self::HotWater => {
