@@ -7,7 +7,7 @@ use super::lever::{Again, Lever};
 use crate::problem::{Place, Problem, Problems};
 use crate::source::Source;
 use crate::units::Fuel;
-use crate::year::{Plan, Signal};
+use crate::year::{Heating, Plan, Signal};
 
 impl Lever {
     /// Acts on contenders that stand as the brief put them. What belongs to the home or the supply moves for every system, what
@@ -22,8 +22,8 @@ impl Lever {
         choice: usize,
         hours: usize,
     ) -> Result<(), Problems> {
-        // Bills and carbon draw nothing from the ground.
-        if self.again() == Again::Everyone {
+        // Bills, carbon and today's boiler draw nothing from the ground.
+        if self.again() == Again::Everyone && self != Self::BoilerEfficiency {
             contenders.iter_mut().for_each(Contender::moved);
         }
         match self {
@@ -55,6 +55,13 @@ impl Lever {
                 for contender in contenders {
                     let fabric = &mut contender.system.home.fabric;
                     *fabric = fabric.with_heat_loss(fabric.heat_loss_w_per_k() * value);
+                }
+            }
+            Self::BoilerEfficiency => {
+                for contender in contenders.iter_mut().filter(|contender| contender.today) {
+                    if let Heating::Boiler { boiler, .. } = &mut contender.system.heating {
+                        *boiler = boiler.with_efficiency_times(value);
+                    }
                 }
             }
             Self::HotWater => {
