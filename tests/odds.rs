@@ -69,6 +69,31 @@ fn shares_agree_with_another_program() {
     }
 }
 
+/// A linear model of eight quantities with weights 8 to 1 from 80 samples: shares w²/Σw² in closed form.
+#[test]
+fn a_small_sample_is_enough_where_the_others_are_straight() {
+    let cube = Hypercube {
+        seed: 3,
+        points: 20,
+        quantities: 8,
+    };
+    let x: Vec<Vec<f64>> = (0..4).flat_map(|block| cube.block(block)).collect();
+    let weight = |i: usize| (8 - i) as f64;
+    let of = |p: &Vec<f64>| (0..8).map(|i| weight(i) * p[i]).sum();
+    let y: Vec<f64> = x.iter().map(of).collect();
+    let whole: f64 = (0..8).map(|i| weight(i).powi(2)).sum();
+    for (i, found) in shares(&x, &y).unwrap().iter().enumerate() {
+        let expected = weight(i).powi(2) / whole;
+        // The spread of 80 samples is itself known to √(2/80) = 16 %, taken twice; class means alone would have an error of about
+        // 1/√80 = 0.11 for every quantity, however little it matters.
+        let within = 0.02 + 0.32 * expected;
+        assert!(
+            (found.share - expected).abs() < within,
+            "{i}: {found:?} {expected}"
+        );
+    }
+}
+
 /// The estimate tells its odds and its two most important unknowns, the same bytes whatever the number of threads, and leaves them
 /// out when asked to.
 #[test]
@@ -219,4 +244,61 @@ fn an_interrupted_answer_is_of_whole_blocks() {
     assert_eq!(answer["stopped"], "interrupted");
     let samples = answer["samples"].as_u64().unwrap();
     assert!(samples >= 50 && samples % 50 == 0 && samples < 1_000_000);
+}
+
+/// Two years in a file, the second 3 K colder: each sample meets one of them, the same for every system, so that the year of the
+/// weather is among the unknowns and the carbon of a system has two heaps.
+#[test]
+fn the_year_of_the_weather_is_drawn() {
+    let root = Path::new(env!("CARGO_MANIFEST_DIR"));
+    let folder = tempfile::tempdir().unwrap();
+    let one = fs::read_to_string(root.join("weather_samples/morvane_sound.csv")).unwrap();
+    let mut two = one.clone();
+    for line in one.lines().filter(|line| line.starts_with("2023-")) {
+        let mut cells: Vec<String> = line.split(',').map(str::to_owned).collect();
+        // 2024 has a leap day more, 2025 has none: the years must follow each other, so the file becomes 2022 and 2023.
+        let colder: f64 = cells[1].parse::<f64>().unwrap() - 3.0;
+        cells[1] = format!("{colder:.1}");
+        two += &format!("{}\n", cells.join(","));
+    }
+    let first = two.find("2023-01-01T00:00Z").unwrap();
+    let half = first + one[first..].len();
+    let two = format!(
+        "{}{}{}",
+        &two[..first],
+        two[first..half].replace("2023-", "2022-"),
+        &two[half..]
+    );
+    fs::write(folder.path().join("two.csv"), two).unwrap();
+    let brief = fs::read_to_string(root.join("briefs/terrace.toml")).unwrap();
+    let at = |relative: &str| root.join(relative).display().to_string();
+    let brief = brief
+        .replace("../weather_samples/morvane_sound.csv", "two.csv")
+        .replace("../tariffs", &at("tariffs"))
+        .replace("machines/", &format!("{}/", at("briefs/machines")));
+    let path = folder.path().join("brief.toml");
+    fs::write(&path, brief).unwrap();
+    let answer = json(&run(
+        &[
+            "odds",
+            path.to_str().unwrap(),
+            "--samples",
+            "100",
+            "--format",
+            "json",
+        ],
+        "2",
+    ));
+    let matters = answer["what_matters"].as_array().unwrap();
+    let year = matters
+        .iter()
+        .find(|one| one["lever"] == "year of the weather")
+        .unwrap();
+    assert!(year.get("turns_at").is_none());
+    let one_year = json(&run(&["odds", "--samples", "100", "--format", "json"], "2"));
+    let spread = |answer: &serde_json::Value| {
+        let carbon = &answer["choices"][1]["carbon_kg"];
+        carbon["p90"].as_f64().unwrap() - carbon["p10"].as_f64().unwrap()
+    };
+    assert!(spread(&answer) > spread(&one_year));
 }

@@ -100,7 +100,7 @@ pub fn odds_text(answer: &OddsAnswer) -> String {
     ));
     blocks.push(wrapped(
         &format!(
-            "{} samples in {} blocks, seed {}: {}. The prices of electricity and gas go together with a correlation of {}.",
+            "{} samples in {} blocks, seed {}: {}. The prices of electricity and gas go together with a correlation of {}, so that the shares of what makes the spread need not add up to 100 %.",
             answer.samples,
             answer.blocks,
             answer.seed,

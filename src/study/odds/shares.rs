@@ -219,22 +219,6 @@ mod tests {
         check(&x, &y, &parts.map(|part| part / whole), 0.02);
     }
 
-    /// A linear model of eight quantities with weights 8 to 1, known to a hundredth from 80 samples: shares w²/Σw² in closed form.
-    /// Without the other quantities taken off the error would be about 1/√80 = 0.11.
-    #[test]
-    fn a_small_sample_is_enough_where_the_others_are_straight() {
-        let x: Vec<Vec<f64>> = sample(8).into_iter().take(80).collect();
-        let weight = |i: usize| (8 - i) as f64;
-        let y: Vec<f64> = x
-            .iter()
-            .map(|p| (0..8).map(|i| weight(i) * p[i]).sum())
-            .collect();
-        let whole: f64 = (0..8).map(|i| weight(i).powi(2)).sum();
-        let expected: Vec<f64> = (0..8).map(|i| weight(i).powi(2) / whole).collect();
-        // What is left is the scatter of the quantity itself in the first 80 of 100 slices, and six classes for a straight line.
-        check(&x, &y, &expected, 0.06);
-    }
-
     /// Two quantities that go together by a correlation: knowing one tells part of the other. y = a + b of two normal scores with
     /// correlation r: Var(E[y|a]) = (1 + r)², Var(y) = 2 + 2 r, so that either share is (1 + r)/2 = 0.8.
     #[test]

@@ -91,6 +91,8 @@ pub(super) fn possible(
     range.check(lever.name())?;
     let mut problems = Problems::new();
     for end in [range.at(0.0005), range.at(0.9995)].into_iter().flatten() {
+        // Three decimals are told.
+        let end = (end * 1000.0).round() / 1000.0;
         problems.take(lever.check(end, case, choice));
     }
     problems.or(())
