@@ -81,6 +81,8 @@ pub use emitter_study::{EmitterStep, EmitterStudy, emitter_study};
 pub use energy_flow::{EnergyFlow, Flow, FlowKind, energy_flow};
 pub use font::clean as plain_line;
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
+#[cfg(feature = "pdf")]
+pub(crate) use font::{Weight, glyphs, width as text_width};
 pub use geometry::Rect;
 pub use label::Label;
 pub use load_duration::{LoadDuration, load_duration};
@@ -91,6 +93,8 @@ pub use paint::PNG_PIXELS;
 pub use palette::Colour;
 pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
 pub use saving_odds::{ChoiceSaving, SavingOdds, saving_odds};
+#[cfg(feature = "pdf")]
+pub(crate) use scene::Item;
 pub use scene::WIDTH;
 pub use signature::{MeterPoint, SignaturePlot, signature_plot};
 pub use spread_shares::{SpreadShares, UnknownShare, spread_shares};
@@ -144,6 +148,12 @@ impl Picture {
     /// Every text of the picture with the room it takes.
     pub fn labels(&self) -> &[Label] {
         &self.scene.labels
+    }
+
+    /// What is painted, in order, for an output outside this room.
+    #[cfg(feature = "pdf")]
+    pub(crate) fn items(&self) -> &[Item] {
+        &self.scene.items
     }
 
     /// The whole picture, in points.
@@ -245,6 +255,12 @@ fn named(label: &str) -> &str {
     } else {
         label
     }
+}
+
+/// A line of regular text shortened until it is at most `room` wide.
+#[cfg(feature = "pdf")]
+pub(crate) fn fit_line(text: &str, size: f64, room: f64) -> String {
+    font::fit(text, size, Weight::Regular, room)
 }
 
 /// A name as the first sentence of a subtitle: at most `room` wide, and closed with a full stop.
