@@ -69,6 +69,23 @@ impl Boiler {
         }
     }
 
+    /// The same boiler with an efficiency that is a multiple of it, as far as a boiler can reach.
+    pub fn with_efficiency_times(self, factor: f64) -> Self {
+        let efficiency = match self.efficiency {
+            BoilerEfficiency::Seasonal(seasonal) => BoilerEfficiency::Seasonal(
+                GrossEfficiency::new((seasonal.fraction() * factor).min(1.0)).unwrap_or(seasonal),
+            ),
+            BoilerEfficiency::FollowingReturn {
+                combustion,
+                field_factor,
+            } => BoilerEfficiency::FollowingReturn {
+                combustion,
+                field_factor: (field_factor * factor).min(1.0),
+            },
+        };
+        Self { efficiency, ..self }
+    }
+
     /// Heat out per fuel in on gross calorific value when the water comes back at a temperature (°C).
     pub fn gross_efficiency(&self, return_c: f64) -> f64 {
         match self.efficiency {

@@ -9,7 +9,7 @@ use crate::home::Emitters;
 use crate::problem::{Place, Problem, Problems};
 use crate::source::Source;
 use crate::units::Fuel;
-use crate::year::{Plan, Signal};
+use crate::year::{Heating, Plan, Signal};
 
 impl Lever {
     /// Acts on contenders that stand as the brief put them. What belongs to the home or the supply moves for every system, what
@@ -24,8 +24,8 @@ impl Lever {
         choice: usize,
         hours: usize,
     ) -> Result<(), Problems> {
-        // Bills and carbon draw nothing from the ground.
-        if self.again() == Again::Everyone {
+        // Bills, carbon and today's boiler draw nothing from the ground.
+        if self.again() == Again::Everyone && self != Self::BoilerEfficiency {
             contenders.iter_mut().for_each(Contender::moved);
         }
         match self {
@@ -67,6 +67,13 @@ impl Lever {
                             held.greatest_flow_c(),
                         )
                         .unwrap_or(held);
+                    }
+                }
+            }
+            Self::BoilerEfficiency => {
+                for contender in contenders.iter_mut().filter(|contender| contender.today) {
+                    if let Heating::Boiler { boiler, .. } = &mut contender.system.heating {
+                        *boiler = boiler.with_efficiency_times(value);
                     }
                 }
             }
