@@ -7,7 +7,7 @@ pub struct ColdSide {
     pub open_c: f64,
     /// How far it falls for each kilowatt drawn, K/kW; 0 for air.
     pub k_per_kw: f64,
-    /// Relative humidity of the air, 0..1, where it is known.
+    /// Relative humidity of the air, 0..1, over liquid water as weather stations state it, where it is known.
     pub relative_humidity: Option<f64>,
 }
 

@@ -14,7 +14,8 @@ const AIR_KJ_PER_KG_K: f64 = 1.006;
 /// How far the coil's surface stands towards the refrigerant, as a share of the approach. With 9 K of approach frost
 /// begins at about +5 °C, where it begins in maritime air (methods §9, common practice).
 const SURFACE_SHARE: f64 = 0.6;
-/// Below this surface temperature the whole coil frosts, °C; between it and 0 °C part of it stays wet. Common practice, no source.
+/// Below this surface temperature the whole coil frosts, °C; between it and 0 °C part of it stays wet: `x² (3 − 2x)` of it frosts at
+/// the share x of the way. Common practice, no source.
 const FULL_GROWTH_C: f64 = -4.0;
 /// Loss of output over loss of COP: the US test procedure's 35 °F point has capacity 0.90 and power 0.985 of the
 /// frost-free line, so COP 0.914 (methods §9, \[from memory\]).
@@ -39,6 +40,21 @@ pub struct FrostLoss {
     pub output: f64,
     /// Share of the frost-free COP that is lost, 0..1.
     pub cop: f64,
+}
+
+/// Outdoor temperature above which no coil freezes, °C: it would take an approach of 25 K.
+const FROST_FREE_C: f64 = 15.0;
+/// A coil with a largest approach up to this, K, is coldest at the air's own temperature; one beyond it might freeze in milder air yet,
+/// where a cool flow keeps the evaporator below the air.
+const USUAL_APPROACH_K: f64 = 16.0;
+
+/// Outdoor temperature above which a coil with a largest approach (K) stays above freezing, °C.
+pub fn frost_free_above_c(largest_approach_k: f64) -> f64 {
+    if largest_approach_k > USUAL_APPROACH_K {
+        FROST_FREE_C
+    } else {
+        SURFACE_SHARE * largest_approach_k
+    }
 }
 
 impl Frost {
@@ -70,13 +86,13 @@ fn latent_share(outdoor_c: f64, surface_c: f64, humidity_ratio: f64) -> f64 {
     latent / (latent + AIR_KJ_PER_KG_K * (outdoor_c - surface_c))
 }
 
-/// Humidity ratio of outdoor air, kg/kg, from its temperature and, where there is one, its relative humidity (0..1, over ice below
-/// 0 °C, as [`MoistAir`] has it).
+/// Humidity ratio of outdoor air, kg/kg, from its temperature and, where there is one, its relative humidity (0..1, over liquid
+/// water at all temperatures, as weather stations state it: [`MoistAir::at_station`]).
 ///
 /// Without humidity the air is taken as in the standard rating conditions, wet bulb 1 K below dry bulb.
 pub fn humidity_ratio(outdoor_c: f64, relative_humidity: Option<f64>) -> f64 {
     match relative_humidity {
-        Some(share) => MoistAir::new(outdoor_c, share.clamp(0.0, 1.0), SEA_LEVEL_PA)
+        Some(share) => MoistAir::at_station(outdoor_c, share.clamp(0.0, 1.0), SEA_LEVEL_PA)
             .map_or(f64::NAN, |air| air.humidity_ratio()),
         None => standard_humidity_ratio(outdoor_c),
     }
@@ -98,7 +114,7 @@ pub fn standard_humidity_ratio(outdoor_c: f64) -> f64 {
 
 /// Humidity ratio of saturated air, kg/kg, over ice below 0 °C; not a number outside −100 to 200 °C.
 fn saturated_humidity_ratio(temperature_c: f64) -> f64 {
-    MoistAir::new(temperature_c, 1.0, SEA_LEVEL_PA).map_or(f64::NAN, |air| air.humidity_ratio())
+    MoistAir::saturated(temperature_c, SEA_LEVEL_PA).map_or(f64::NAN, |air| air.humidity_ratio())
 }
 
 #[cfg(test)]
@@ -143,7 +159,10 @@ mod tests {
         assert_eq!(loss(7.0), 0.0);
         assert!(damp(4.0, 0.95).cop > 0.0 && damp(4.0, 0.95).cop < loss(1.7));
         assert!(loss(-7.0) < loss(0.0));
-        assert!(loss(-15.0) < 0.5 * loss(0.0));
+        // Dry cold: 73 % over water at −15 °C is 85 % over ice, as 85 % is at 0 °C. At 85 % over water that air is all but
+        // saturated over ice, and still frosts less.
+        assert!(damp(-15.0, 0.73).cop < 0.5 * loss(0.0));
+        assert!(loss(-15.0) < 0.7 * loss(0.0), "{}", loss(-15.0) / loss(0.0));
         assert!(damp(-10.0, 0.4).cop < 0.2 * damp(-1.0, 0.9).cop);
     }
 
@@ -151,6 +170,17 @@ mod tests {
     fn a_coil_above_freezing_has_no_frost() {
         let moisture = humidity_ratio(2.0, Some(1.0));
         assert_eq!(TYPICAL.loss(2.0, 1.0, moisture), FrostLoss::default());
+    }
+
+    /// A station's 90 % at −7 °C is 0.90 × 362.0 Pa over water (Murphy & Koop 2005): 2.006 g/kg by hand. Reading it over ice
+    /// (0.90 × 338.0 Pa, 1.873 g/kg) would leave a sixth of the frost out.
+    #[test]
+    fn a_stations_humidity_in_the_cold_is_over_water() {
+        let moisture = humidity_ratio(-7.0, Some(0.9));
+        assert!((moisture * 1000.0 - 2.006).abs() < 0.004, "{moisture}");
+        let over_ice = TYPICAL.loss(-7.0, -7.0 - APPROACH_K, 0.001_873).cop;
+        let understated = 1.0 - over_ice / TYPICAL.loss(-7.0, -7.0 - APPROACH_K, moisture).cop;
+        assert!((0.1..0.2).contains(&understated), "{understated}");
     }
 
     proptest! {

@@ -269,7 +269,9 @@ fn assumptions(estimate: &Estimate, marks: &Marks, sources: bool) -> String {
 }
 
 pub(super) fn wrapped(text: &str, first: &str, others: &str) -> String {
+    // Named, so that the text is the same with and without the PDF's line breaker in the build.
     let options = textwrap::Options::new(usize::from(WIDTH))
+        .wrap_algorithm(textwrap::WrapAlgorithm::FirstFit)
         .initial_indent(first)
         .subsequent_indent(others);
     textwrap::fill(text, options)

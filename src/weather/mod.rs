@@ -87,7 +87,7 @@ pub struct Weather {
     pub kind: Kind,
     /// Outdoor dry-bulb temperature, °C.
     pub outdoor_c: Vec<f64>,
-    /// Relative humidity as a share of one, 0 to 1.
+    /// Relative humidity as a share of one, 0 to 1, over liquid water at all temperatures (WMO-No. 8).
     pub relative_humidity: Option<Vec<f64>>,
     /// Global radiation on the horizontal, hourly mean, W/m².
     pub global_w_per_m2: Option<Vec<f64>>,

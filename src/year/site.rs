@@ -18,7 +18,7 @@ pub struct Site {
     pub years: Vec<(i32, Range<usize>)>,
     /// Outdoor air, °C.
     pub outdoor_c: Vec<f64>,
-    /// Relative humidity, 0 to 1, where the weather has it.
+    /// Relative humidity, 0 to 1, over liquid water at all temperatures, where the weather has it.
     pub relative_humidity: Option<Vec<f64>>,
     /// Global horizontal radiation, W/m², where the weather has it.
     pub global_w_per_m2: Option<Vec<f64>>,
