@@ -7,6 +7,7 @@ use serde::Serialize;
 use super::account::{BillAnswer, MeterAnswer, ShiftingAnswer};
 use super::home::{DesignAnswer, MeteredAnswer, PatternComparison, RoomsAnswer, StoreAnswer};
 use super::odds::OddsSummary;
+use super::lifetime::LifetimeAnswer;
 use crate::problem::Finding;
 
 /// The comparison of all systems of a brief.
@@ -26,6 +27,9 @@ pub struct Estimate {
     /// How sure it is: chances from a modest sample; absent where none was drawn. The command `odds` says more.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub odds: Option<OddsSummary>,
+    /// Money and carbon over the years; absent where no choice's capital is known.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub lifetime: Option<LifetimeAnswer>,
     /// Currency of every amount, ISO 4217.
     pub currency: String,
     /// What the carbon factors count.

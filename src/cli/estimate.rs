@@ -11,6 +11,7 @@ use crate::answer::{Estimate, compare_patterns, compose};
 use crate::brief::{Brief, DEFAULTS};
 use crate::chart::ChartError;
 use crate::home::Pattern;
+use crate::locale::Marks;
 use crate::problem::Problems;
 #[cfg(feature = "pdf")]
 use crate::report::report_pdf;
@@ -130,7 +131,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     match args.format {
         Format::Json => print_json(&estimate),
         Format::Text => {
-            let mut text = text(&estimate, args);
+            let mut text = text(&estimate, &brief.locale.marks, args);
             if args.bills {
                 text += &format!("\n\n{}", accounts(&estimate, &brief, &outcomes)?);
             }
@@ -192,8 +193,8 @@ fn files(folder: &Path, material: &Material<'_>) -> Result<Vec<NewFile>, Box<dyn
     Ok(files)
 }
 
-fn text(estimate: &Estimate, args: &Args) -> String {
-    let mut text = estimate_text(estimate, args.assumptions);
+fn text(estimate: &Estimate, marks: &Marks, args: &Args) -> String {
+    let mut text = estimate_text(estimate, marks, args.assumptions);
     if args.home {
         text += &format!("\n\n{}", home_text(estimate));
     }

@@ -12,6 +12,7 @@ mod ground;
 mod home;
 mod hours;
 mod ledger;
+mod narrow;
 mod odds;
 mod odds_pictures;
 mod page;
