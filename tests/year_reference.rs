@@ -55,7 +55,10 @@ fn three_years_agree_with_their_reimplementation() {
             }
             let off = percent(got, expected);
             println!("{home:8} {column:16} {got:10.2} {expected:10.2} {off:+.4} %");
-            assert!(off.abs() < bound, "{home} {column}: {got} {expected} {off} %");
+            assert!(
+                off.abs() < bound,
+                "{home} {column}: {got} {expected} {off} %"
+            );
         }
     }
 }

@@ -11,6 +11,7 @@ use super::home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomsAnswer, StoreAnswer,
 };
 use super::lever::lever_answer;
+use super::lifetime::lifetime;
 use super::weather_years::{succession, year_answers, year_spread};
 use crate::home::Pattern;
 use crate::problem::{Finding, Problems, Severity};
@@ -151,6 +152,8 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         systems,
         patterns: Vec::new(),
         break_even: break_evens,
+        odds: None,
+        lifetime: lifetime(case, outcomes),
         currency: case.currency.code().to_owned(),
         carbon_scope: told.carbon_scope.clone(),
         assumptions: told

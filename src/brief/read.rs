@@ -14,6 +14,7 @@ use super::home::WeatherFacts;
 use super::lifetime::terms;
 use super::locale::locale;
 use super::notes::Notes;
+use super::odds::said;
 use super::raw;
 use super::site::{facts, used};
 use super::system::{Surroundings, contender};
@@ -24,6 +25,7 @@ use crate::document::{Check, Document, Section, read_text};
 use crate::locale::Locale;
 use crate::problem::Problems;
 use crate::signature::DailyWeather;
+use crate::study::odds::Doubts;
 use crate::study::{Case, scale_to_fuel};
 
 /// A brief that can be run.
@@ -35,6 +37,10 @@ pub struct Brief {
     pub told: Told,
     /// How figures are written.
     pub locale: Locale,
+    /// What is not known for certain.
+    pub doubts: Doubts,
+    /// Standard error to which every chance is to be known, as a fraction; nothing where the brief does not say.
+    pub precision: Option<f64>,
 }
 
 impl Brief {
@@ -177,6 +183,7 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         .choice
         .iter()
         .any(|choice| choice.capital.is_some() || choice.outlay.is_some());
+    let unsure = said(raw, check);
     let terms = terms(raw.lifetime.as_ref(), told, check, &mut notes);
     let Energy {
         currency,
@@ -190,6 +197,13 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         _ => None,
     };
     case.age_grounds();
+    let (price_correlation, precision) = (unsure.price_correlation, unsure.precision);
+    // Ranges belong to systems by their place, which is only known when all of them could be read.
+    let declared = match check.problems().is_empty() {
+        true => unsure.checked(&case, check, &mut notes),
+        false => Vec::new(),
+    };
+    let doubts = Doubts::of(&case, &declared, price_correlation);
     Some(Brief {
         case,
         told: Told {
@@ -205,6 +219,8 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             bills,
         },
         locale,
+        doubts,
+        precision,
     })
 }
 

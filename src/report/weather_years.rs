@@ -3,27 +3,32 @@
 use super::table::plain_table_within;
 use super::text::WIDTH;
 use crate::answer::{ExtentAnswer, SystemAnswer, YearSpread};
+use crate::locale::Marks;
 
 /// More years than this are shown by their extremes only.
 const MOST_YEARS: usize = 12;
 
 /// The years of some systems, today's first; nothing for a single year.
-pub(super) fn weather_years_text(systems: &[&SystemAnswer], currency: &str) -> Option<String> {
+pub(super) fn weather_years_text(
+    systems: &[&SystemAnswer],
+    currency: &str,
+    marks: &Marks,
+) -> Option<String> {
     let today = systems.first()?;
     let years = today.by_year.len();
     if years < 2 {
         return None;
     }
     let mut text = if years <= MOST_YEARS {
-        format!("{}\n\n", each_year(systems, currency))
+        format!("{}\n\n", each_year(systems, currency, marks))
     } else {
         String::new()
     };
-    text += &spreads(systems, currency, years);
+    text += &spreads(systems, currency, years, marks);
     Some(text)
 }
 
-fn each_year(systems: &[&SystemAnswer], currency: &str) -> String {
+fn each_year(systems: &[&SystemAnswer], currency: &str, marks: &Marks) -> String {
     let names = systems.iter().map(|system| {
         if system.today {
             format!("{}: cost", system.label)
@@ -37,6 +42,7 @@ fn each_year(systems: &[&SystemAnswer], currency: &str) -> String {
     let years = systems.first().map_or(&[][..], |today| &today.by_year);
     let rows = years.iter().enumerate().map(|(i, year)| {
         let outdoors = format!("{:.1}, {:.1}", year.mean_outdoor_c, year.min_outdoor_c);
+        let outdoors = marks.localized(&outdoors);
         let figures = systems.iter().map(|system| {
             let year = system.by_year.get(i);
             let figure = year.and_then(|year| match year.saving {
@@ -81,7 +87,7 @@ const LINES: &[Line] = &[
     ),
 ];
 
-fn spreads(systems: &[&SystemAnswer], currency: &str, years: usize) -> String {
+fn spreads(systems: &[&SystemAnswer], currency: &str, years: usize, marks: &Marks) -> String {
     let header = std::iter::once(format!("{years} years, {currency}"))
         .chain(systems.iter().map(|system| system.label.clone()));
     let rows = LINES.iter().filter_map(|(name, of, written)| {
@@ -91,7 +97,11 @@ fn spreads(systems: &[&SystemAnswer], currency: &str, years: usize) -> String {
             .collect();
         let known = extents.iter().any(Option::is_some);
         let cells = extents.into_iter().map(|extent| match extent {
-            Some(extent) => format!("{} to {}", written(extent.least), written(extent.greatest)),
+            Some(extent) => marks.localized(&format!(
+                "{} to {}",
+                written(extent.least),
+                written(extent.greatest)
+            )),
             None => "–".to_owned(),
         });
         known.then(|| std::iter::once((*name).to_owned()).chain(cells).collect())

@@ -136,16 +136,15 @@ impl Case {
         }
     }
 
-    /// The same case run through one year of its weather only, by the year's place from 0; nothing where there is no such year.
+    /// The same case run through one year of its weather only, by the year's place from 0; all of it where there is no
+    /// such year.
     ///
     /// Everything that was made for the whole weather is shared, so a draw among the years costs no more than a year's run. The
     /// year begins with rooms and store at their set points; a buried loop begins it as all years left it.
-    pub fn in_year(&self, place: usize) -> Option<Self> {
-        self.site.years.get(place)?;
-        Some(Self {
-            only: Some(place),
-            ..self.clone()
-        })
+    #[must_use]
+    pub fn in_year(mut self, place: usize) -> Self {
+        self.only = (place < self.site.years.len()).then_some(place);
+        self
     }
 
     /// The years of the weather that are run, each with its hours.
@@ -279,15 +278,16 @@ impl Case {
         contender: &Contender,
         ledger: Option<&mut Ledger>,
     ) -> Result<Outcome, Problems> {
+        let run = |ground, ledger| self.run_from(contender, ground, ledger);
         let Some(aged) = contender.aged else {
-            return self.run_from(contender, Memory::default(), ledger);
+            return run(Memory::default(), ledger);
         };
         if !aged.moved {
-            return self.run_from(contender, aged.memory, ledger);
+            return run(aged.memory, ledger);
         }
-        let trial = self.run_from(contender, aged.memory, None)?;
+        let trial = run(aged.memory, None)?;
         let drawn_kwh = trial.mean(|year| year.sums.extracted_kwh - year.sums.returned_kwh);
-        self.run_from(contender, aged.for_draw(drawn_kwh), ledger)
+        run(aged.for_draw(drawn_kwh), ledger)
     }
 
     /// Runs one system through every year from what its ground remembers.
@@ -326,7 +326,7 @@ impl Case {
         Ok(costs)
     }
 
-    /// Runs one system through every year; gives what the ground remembers at the end beside the outcome.
+    /// Runs one system through the years that are run; gives what the ground remembers at the end beside the outcome.
     fn run_through(
         &self,
         contender: &Contender,

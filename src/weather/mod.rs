@@ -51,8 +51,8 @@ pub use describe::{
     unfit_for_peak_load,
 };
 pub use options::{
-    Column, ColumnChoice, DateOrder, Delimiter, Encoding, MAX_EXPANDED_BYTES, MAX_FILE_BYTES,
-    PartColumns, ReadOptions, RepairPolicy, StampMarks, TemperatureUnit,
+    Column, ColumnChoice, DateOrder, Delimiter, Encoding, MAX_EXPANDED_BYTES, PartColumns,
+    ReadOptions, RepairPolicy, StampMarks, TemperatureUnit,
 };
 pub use read::{read, read_all, read_all_bytes, read_bytes};
 pub use typical_year::{TypicalYear, typical_year};

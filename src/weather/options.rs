@@ -9,9 +9,6 @@ use super::zone::Zone;
 /// Most bytes that a compressed file may unpack to.
 pub const MAX_EXPANDED_BYTES: u64 = 128 * 1024 * 1024;
 
-/// Largest file that is read, bytes: thirty years of minutes are smaller. Lines may be as long as the file.
-pub const MAX_FILE_BYTES: u64 = 512 * 1024 * 1024;
-
 /// How to read one weather file. What is left out is detected; what cannot be detected gets the default named
 /// beside the field, and a finding says so.
 #[derive(Debug, Clone, Default)]

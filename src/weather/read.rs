@@ -3,15 +3,15 @@
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use chrono::DateTime;
+use chrono::{DateTime, TimeDelta};
 
 use super::hours::{self, Hours};
 use super::words::count;
-use super::{
-    Kind, MAX_FILE_BYTES, ReadOptions, Weather, bytes, check, clock, layout, repair, rows, values,
-};
+use super::{Kind, ReadOptions, Weather, bytes, check, clock, layout, repair, rows, values};
 use crate::air;
 use crate::calendar::HourAxis;
+use crate::fault::{self, Fault};
+use crate::limits::{LARGEST_DATA, check_lines, read_at_most};
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
 
 const HOUR_S: i64 = 3600;
@@ -105,23 +105,10 @@ pub fn read_all_bytes<B: AsRef<[u8]>>(
 }
 
 fn contents(path: &Path) -> Result<Vec<u8>, Problems> {
-    let refuse = |found: String, allowed: String, remedy: &str| -> Problems {
+    read_at_most(path, LARGEST_DATA).map_err(|beyond| {
         let place = Place::file(path.display().to_string());
-        Problem::new(place, found, allowed, remedy).into()
-    };
-    let unread = |error: std::io::Error| {
-        let found = format!("cannot be read: {error}");
-        refuse(found, "a file that can be read".to_owned(), "")
-    };
-    let length = path.metadata().map_err(unread)?.len();
-    if length > MAX_FILE_BYTES {
-        return Err(refuse(
-            format!("the file is {length} bytes long"),
-            format!("at most {} MiB", MAX_FILE_BYTES >> 20),
-            "give the years in files of their own",
-        ));
-    }
-    std::fs::read(path).map_err(unread)
+        Problem::new(place, beyond.found, beyond.allowed, "").into()
+    })
 }
 
 /// Everything up to hours with holes.
@@ -138,6 +125,15 @@ fn on_hours(
     } else {
         text.replace('\r', "\n").into()
     };
+    check_lines(&text).map_err(|beyond| {
+        let place = place.clone().at_line(beyond.line.unwrap_or(0));
+        Problem::new(
+            place,
+            beyond.found,
+            beyond.allowed,
+            "is this a file of hourly readings?",
+        )
+    })?;
     let layout = layout::layout(name, &text, options, findings)?;
     let mut rows = rows::rows(name, &text, &layout, options, findings)?;
     let values = values::values(&place, &mut rows, &layout, options, findings)?;
@@ -240,8 +236,9 @@ fn finish(
         )
         .into());
     };
+    let late_h = i64::from(fault::on(Fault::HourEndingStamps));
     let axis = HourAxis {
-        start,
+        start: start + TimeDelta::hours(late_h),
         hours: hours.outdoor_c.len(),
     };
     check::whole_years(&hours, axis.years(), &mut findings);
