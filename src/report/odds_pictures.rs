@@ -62,11 +62,13 @@ pub fn odds_pictures(
                 "What each choice saves in every sample; left of the line it is dearer than today."
                     .to_owned(),
             picture: saving_odds(&saving, marks)?,
+            narrow: Vec::new(),
         },
         Drawn {
             name: "cost_odds".to_owned(),
             caption: "Cost of a year of every system, from P10 to P90.".to_owned(),
             picture: cost_odds(&cost, marks)?,
+            narrow: Vec::new(),
         },
     ];
     if !answer.what_matters.is_empty() {
@@ -84,6 +86,7 @@ pub fn odds_pictures(
             name: "spread_shares".to_owned(),
             caption: "What makes the spread of the saving, with limits.".to_owned(),
             picture: spread_shares(&shares, marks)?,
+            narrow: Vec::new(),
         });
     }
     Ok(drawn)
