@@ -150,6 +150,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         systems,
         patterns: Vec::new(),
         break_even: break_evens,
+        odds: None,
         lifetime: lifetime(case, outcomes),
         currency: case.currency.code().to_owned(),
         carbon_scope: told.carbon_scope.clone(),

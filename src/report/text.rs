@@ -4,6 +4,7 @@ use std::fmt::Write as _;
 
 use super::home::home_in_words;
 use super::table::plain_table_within;
+use crate::answer::odds::OddsSummary;
 use crate::answer::{Estimate, LeverAnswer, SystemAnswer};
 use crate::locale::Marks;
 
@@ -48,9 +49,35 @@ pub fn estimate_text(estimate: &Estimate, marks: &Marks, sources: bool) -> Strin
     for line in home_in_words(estimate) {
         let _ = writeln!(text, "{}", wrapped(&marks.localized(&line), "", "  "));
     }
+    if let Some(odds) = &estimate.odds {
+        let _ = writeln!(text, "\n{}", marks.localized(&odds_in_brief(odds)));
+    }
     let _ = writeln!(text, "\n{}", assumptions(estimate, marks, sources));
     let _ = write!(text, "\n{}", wrapped(LIMITS, "", ""));
     text
+}
+
+/// How sure it is, a paragraph a choice.
+fn odds_in_brief(odds: &OddsSummary) -> String {
+    let heading = format!(
+        "How sure: every unknown within its range, {} samples (winterledger odds draws more)",
+        odds.samples
+    );
+    let mut lines = vec![wrapped(&heading, "", "  ")];
+    for choice in &odds.choices {
+        let error = choice.chance_error.map_or_else(String::new, |error| {
+            // A whole percent: the error of an error is large.
+            format!(" ± {:.0}", (error * 100.0).max(1.0))
+        });
+        let said = format!(
+            "{} Chance {:.0}{error} %. {}",
+            choice.sentence,
+            choice.chance_cheaper * 100.0,
+            choice.depends_on.as_deref().unwrap_or_default()
+        );
+        lines.push(wrapped(said.trim_end(), "", "  "));
+    }
+    lines.join("\n")
 }
 
 /// What the figures are and are not.

@@ -596,7 +596,7 @@ def year(brief, machine, home, weather, zone):
         rows.append(row)
     frame = pd.DataFrame(rows, index=weather.index)
     frame[["electricity", "fuel"]] = frame[["electricity", "fuel"]].round(4)  # as they are stored, so that the bill is theirs
-    days = clock.normalize().nunique()
+    days = len(clock) / 24  # a civil day cut by the end of the series counts by its hours
     return frame, bill(electricity, frame["electricity"], clock, days), bill(gas, frame["fuel"], clock, days)
 
 
@@ -636,7 +636,7 @@ def bill(tariff, kwh, clock, days):
             only = {**tariff, "band": [{**band, "rate": "1" if number(band["rate"]) == rate else "0"} for band in tariff["band"]]}
             lines[rate] = (kwh.to_numpy() * price_column(only, clock)).sum()
     total = sum(cents(Decimal(repr(float(amount))) * Decimal(repr(rate)) / 100) for rate, amount in lines.items())
-    return total + cents(Decimal(str(number(tariff["standing"]))) * days / 100)
+    return total + cents(Decimal(str(number(tariff["standing"]))) * Decimal(days) / 100)
 
 
 def read_weather(path):
