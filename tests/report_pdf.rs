@@ -1,5 +1,6 @@
 //! report.pdf of the main job through the real binary, read back by another PDF library.
-#![cfg(all(test, feature = "pdf"))]
+#![cfg(test)]
+#![cfg(feature = "pdf")]
 
 use std::fs;
 use std::path::Path;
