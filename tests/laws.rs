@@ -438,7 +438,7 @@ fn outcomes_by_label(case: &Case) -> Vec<(String, String)> {
 
 fn cases() -> u32 {
     let asked = std::env::var("LAWS_CASES").ok();
-    asked.and_then(|text| text.parse().ok()).unwrap_or(24)
+    asked.and_then(|text| text.parse().ok()).unwrap_or(12)
 }
 
 proptest! {
