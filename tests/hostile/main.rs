@@ -170,7 +170,7 @@ fn limits_are_told() {
         format!("a = {}1{}", "[".repeat(500), "]".repeat(500)).as_bytes(),
     );
     assert!(
-        told(&["estimate", &deep]).contains("recursion limit"),
+        told(&["estimate", &deep]).contains("recursion depth"),
         "{}",
         told(&["estimate", &deep])
     );
