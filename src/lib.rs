@@ -6,6 +6,8 @@
 pub mod air;
 pub mod bounds;
 pub mod calendar;
+pub mod fault;
+pub mod limits;
 pub mod locale;
 pub mod problem;
 pub mod units;

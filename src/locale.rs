@@ -128,6 +128,30 @@ impl Marks {
         out
     }
 
+    /// A sentence written with decimal points, with the mark of the place instead of each point between two digits.
+    pub fn localized(&self, sentence: &str) -> String {
+        if self.decimal == '.' {
+            return sentence.to_owned();
+        }
+        let letters: Vec<char> = sentence.chars().collect();
+        let digit = |at: Option<usize>| {
+            at.and_then(|at| letters.get(at))
+                .is_some_and(char::is_ascii_digit)
+        };
+        letters
+            .iter()
+            .enumerate()
+            .map(|(i, c)| {
+                let between = digit(i.checked_sub(1)) && digit(Some(i + 1));
+                if *c == '.' && between {
+                    self.decimal
+                } else {
+                    *c
+                }
+            })
+            .collect()
+    }
+
     /// A count with its noun: `1 hour`, `8,760 hours`.
     pub(crate) fn count(&self, n: usize, noun: &str) -> String {
         let plural = if n == 1 { "" } else { "s" };
@@ -207,6 +231,20 @@ mod tests {
             .number(12345.6, 0),
             "12346"
         );
+    }
+
+    #[test]
+    fn a_sentence_takes_the_mark_of_the_place() {
+        let de = Marks {
+            decimal: ',',
+            thousands: Some('.'),
+        };
+        let sentence = "electricity 0.5 % dearer (25.43 ct/kWh). 3 hours.";
+        assert_eq!(
+            de.localized(sentence),
+            "electricity 0,5 % dearer (25,43 ct/kWh). 3 hours."
+        );
+        assert_eq!(Marks::default().localized(sentence), sentence);
     }
 
     #[test]

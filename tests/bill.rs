@@ -79,53 +79,6 @@ fn price(tariff: &Tariff, civil: &[CivilHour], kwh: &[f64]) -> Bill {
     bill::price(tariff, civil, kwh, Connection::Kept).unwrap()
 }
 
-/// Household bill published by the regulator of Great Britain for its price cap of April to June 2026: electricity
-/// 24.67 p/kWh + 57.21 p/day, gas 5.74 p/kWh + 29.09 p/day, 2700 and 11 500 kWh a year; headline £1641 a year. By
-/// hand: 2700 × 0.2467 = 666.09; 365 × 0.5721 = 208.8165 → 208.82; 11 500 × 0.0574 = 660.10; 365 × 0.2909 =
-/// 106.1785 → 106.18; together 1641.19.
-#[test]
-fn the_regulator_s_household_bill_to_the_penny() {
-    let civil = year(2023);
-    let electricity = price(
-        &flat(Fuel::Electricity, "0.2467", "0.5721"),
-        &civil,
-        &evenly(2700.0, &civil),
-    );
-    let gas = price(
-        &flat(Fuel::Gas, "0.0574", "0.2909"),
-        &civil,
-        &evenly(11_500.0, &civil),
-    );
-    assert_eq!(electricity.energy(), decimal("666.09"));
-    assert_eq!(electricity.standing(), decimal("208.82"));
-    assert_eq!(gas.energy(), decimal("660.10"));
-    assert_eq!(gas.standing(), decimal("106.18"));
-    assert_eq!(electricity.total() + gas.total(), decimal("1641.19"));
-    assert_eq!(electricity.tax(), None);
-}
-
-/// Trap: the published rates include 5 % tax; adding it again gives £1723.
-#[test]
-fn tax_is_not_added_to_rates_that_include_it() {
-    let civil = year(2023);
-    let with = |included| {
-        let total = |fuel, rate, standing, kwh| {
-            let mut tariff = flat(fuel, rate, standing);
-            tariff.prices[0].tax = Tax {
-                share: Some(decimal("0.05")),
-                covers: Covers::ALL,
-                included,
-            };
-            price(&tariff, &civil, &evenly(kwh, &civil)).total()
-        };
-        total(Fuel::Electricity, "0.2467", "0.5721", 2700.0)
-            + total(Fuel::Gas, "0.0574", "0.2909", 11_500.0)
-    };
-    assert_eq!(with(true), decimal("1641.19"));
-    // 874.91 × 0.05 = 43.7455 → 43.75; 766.28 × 0.05 = 38.314 → 38.31; 1641.19 + 82.06 = 1723.25.
-    assert_eq!(with(false), decimal("1723.25"));
-}
-
 /// The standing charge goes with the connection, the energy used before does not.
 #[test]
 fn a_standing_charge_ends_with_the_connection() {

@@ -120,7 +120,13 @@ fn the_json_keeps_its_promises() {
     ] {
         number(&result["home"], field);
     }
-    for field in ["break_even", "currency", "assumptions", "findings"] {
+    for field in [
+        "break_even",
+        "lifetime",
+        "currency",
+        "assumptions",
+        "findings",
+    ] {
         assert!(!result[field].is_null(), "{field}");
     }
     for system in result["systems"].as_array().unwrap() {

@@ -5,8 +5,8 @@ use std::f64::consts::TAU;
 use std::path::Path;
 
 use winterledger::source::{
-    AnnualSwing, Antifreeze, Bore, Brine, BrineProperties, BuriedLoop, EARLY_ERROR, Filling,
-    Layout, LoopDesign, Memory, Pipe, Pump, Soil, Trench, UTube, undisturbed_c,
+    AnnualSwing, Antifreeze, Bore, Brine, BuriedLoop, EARLY_ERROR, Filling, Layout, LoopDesign,
+    Memory, Pipe, Pump, Soil, Trench, undisturbed_c,
 };
 
 fn rows(name: &str) -> Vec<Vec<String>> {
@@ -86,74 +86,12 @@ fn bores(name: &str, soil: Soil) -> LoopDesign {
     )
 }
 
-/// Uniform heat rate: the same superposition of the same solution, so only quadrature may differ. A uniform wall temperature, which
-/// pygfunction takes unless told otherwise, lies below it: by 0.2 % after a year of one bore, by 4 % after 25 years of four.
-#[test]
-fn g_functions_are_pygfunctions_at_uniform_heat_rate() {
-    let soil = Soil {
-        conductivity_w_per_m_k: 2.0,
-        diffusivity_m2_per_s: 1e-6,
-    };
-    let rows = rows("ground_g_functions.csv");
-    assert_eq!(rows.len(), 32);
-    for row in rows {
-        let hours = number(&row[1]) * 8760.0;
-        let found =
-            bores(&row[0], soil).wall_response(&[hours])[0] * TAU * soil.conductivity_w_per_m_k;
-        let (same_rate, same_wall) = (number(&row[2]), number(&row[3]));
-        assert!((found / same_rate - 1.0).abs() < 2e-6, "{row:?}: {found}");
-        assert!(same_wall <= same_rate * (1.0 + 1e-6), "{row:?}");
-        let four_after_25 = row[0] == "four" && number(&row[1]) == 25.0;
-        assert!(
-            !four_after_25 || (same_rate / same_wall - 1.0 - 0.0425).abs() < 0.001,
-            "{row:?}"
-        );
-    }
-}
-
 /// The draw of the script, kW, for any hour of any year.
 fn load() -> Vec<f64> {
     rows("ground_load.csv")
         .iter()
         .map(|row| number(&row[1]))
         .collect()
-}
-
-/// Ten years of hourly draw: the memory against an exact convolution with pygfunction's response, within 0.05 K as the issue
-/// asks, and in fact within 0.01 K.
-#[test]
-fn walls_follow_ten_years_of_hourly_draw() {
-    let soil = Soil {
-        conductivity_w_per_m_k: 2.0,
-        diffusivity_m2_per_s: 0.9e-6,
-    };
-    let draw = load();
-    let expected = rows("ground_walls.csv");
-    for name in ["one", "four"] {
-        let made = bores(name, soil).build(1).unwrap();
-        let mut memory = Memory::default();
-        let mut falls = Vec::with_capacity(10 * 8760);
-        for hour in 0..10 * 8760 {
-            made.drawn(hour, draw[hour % 8760], &mut memory);
-            falls.push(made.undisturbed_c(0) - made.wall_c(0, &memory));
-        }
-        let mean = |falls: &[f64]| falls.iter().sum::<f64>() / falls.len() as f64;
-        let mut worst = 0.0f64;
-        let mut seen = 0;
-        for row in expected.iter().filter(|row| row[0] == name) {
-            let found = match row[1].as_str() {
-                "mean_year_1" => mean(&falls[..8760]),
-                "mean_year_10" => mean(&falls[9 * 8760..]),
-                hour => falls[hour.parse::<usize>().unwrap()],
-            };
-            worst = worst.max((found - number(&row[2])).abs());
-            seen += 1;
-        }
-        assert!(
-            seen > 250 && worst < 0.01,
-            "{name}: {worst} K in {seen} hours"
-        );
-    }
 }
 
 /// Twenty-five years of hourly draw on four bores: the memory against the exact sum over every past hour, within 0.02 K. The exact
@@ -197,136 +135,6 @@ fn table(design: &LoopDesign, hours: usize) -> Vec<f64> {
         values[i] + (place - i as f64) * (values[i + 1] - values[i])
     };
     std::iter::once(0.0).chain((1..=hours).map(at)).collect()
-}
-
-/// methods §16: the yearly mean wall of a single bore falls about 1.5 K for each 10 W/m from year 1 to 25; at 2 W/(m K), the ground of
-/// the other values there.
-#[test]
-fn a_loop_is_not_judged_by_its_first_year() {
-    let soil = Soil {
-        conductivity_w_per_m_k: 2.0,
-        diffusivity_m2_per_s: 1e-6,
-    };
-    let made = bores("one", soil).build(1).unwrap();
-    let mut memory = Memory::default();
-    let mut means = Vec::new();
-    for _ in 0..25 {
-        let mut sum = 0.0;
-        for hour in 0..8760 {
-            made.drawn(hour, 1.0, &mut memory);
-            sum += made.wall_c(0, &memory);
-        }
-        means.push(sum / 8760.0);
-    }
-    let fall_k = means[0] - means[24];
-    // "About": a tenth either way; depth and radius behind the figure are not stated.
-    assert!((fall_k / 1.5 - 1.0).abs() < 0.1, "{fall_k}");
-}
-
-/// The closed first-order formula is pygfunction's first-order multipole solution, which iterates to about 1e-8; the tenth order
-/// differs by less than 1 %.
-#[test]
-fn borehole_resistances_are_those_of_the_multipole_method() {
-    let rows = rows("ground_resistances.csv");
-    assert_eq!(rows.len(), 5);
-    for row in rows {
-        let v: Vec<_> = row.iter().map(|text| number(text)).collect();
-        let pipe = Pipe {
-            outside_m: 2.0 * v[1],
-            wall_m: 0.003,
-            conductivity_w_per_m_k: 0.4,
-        };
-        let tube = UTube {
-            bore_radius_m: v[0],
-            pipe,
-            spacing_m: v[2],
-            grout_w_per_m_k: v[4],
-        };
-        let local = tube.local_resistance(v[3], v[5]);
-        let internal = tube.internal_resistance(v[3], v[5]);
-        assert!((local / v[6] - 1.0).abs() < 1e-7, "{row:?} {local}");
-        assert!((internal / v[7] - 1.0).abs() < 1e-7, "{row:?} {internal}");
-        assert!(
-            (local / v[8] - 1.0).abs() < 0.01 && (internal / v[9] - 1.0).abs() < 0.01,
-            "{row:?}"
-        );
-    }
-}
-
-#[test]
-fn friction_and_film_are_those_of_another_library() {
-    let pipe = Pipe {
-        outside_m: 0.04,
-        wall_m: 0.0037,
-        conductivity_w_per_m_k: 0.42,
-    };
-    let brine = BrineProperties {
-        density_kg_per_m3: 1043.0,
-        heat_capacity_kj_per_kg_k: 3.7,
-        viscosity_pa_s: 0.0045,
-        conductivity_w_per_m_k: 0.45,
-    };
-    let rows = rows("ground_pipes.csv");
-    assert_eq!(rows.len(), 6);
-    for row in rows {
-        let flow = pipe.flow(number(&row[0]), &brine);
-        // Both iterate the Colebrook equation to 1e-6 or better.
-        assert!(
-            (flow.pascal_per_m / number(&row[1]) - 1.0).abs() < 1e-5,
-            "{row:?} {flow:?}"
-        );
-        // Between laminar and turbulent the library takes the friction of the flow itself where Gnielinski 2013 takes that at
-        // Reynolds number 4000.
-        let tolerance = if (2300.0..4000.0).contains(&flow.reynolds) {
-            0.025
-        } else {
-            1e-5
-        };
-        assert!(
-            (flow.resistance_m_k_per_w / number(&row[2]) - 1.0).abs() < tolerance,
-            "{row:?} {flow:?}"
-        );
-    }
-}
-
-/// Two collections of data. The first is Melinder's own, so only the printed figures of the coefficients differ; the second is of
-/// other measurements, and its makers' products differ from pure glycol by some per cent.
-#[test]
-fn brine_properties_agree_with_two_collections() {
-    let mut seen = 0;
-    for row in rows("ground_brines.csv") {
-        let antifreeze = if row[0] == "ethylene glycol" {
-            Antifreeze::EthyleneGlycol
-        } else {
-            Antifreeze::PropyleneGlycol
-        };
-        let brine = Brine::new(antifreeze, number(&row[1])).unwrap();
-        let at = brine.at(number(&row[3]));
-        let own = !row[2].ends_with('2');
-        let [density, heat, viscosity, conductivity] = if own {
-            [2e-4, 2e-4, 2e-3, 2e-3]
-        } else {
-            [0.004, 0.035, 0.08, 0.02]
-        };
-        let near = |found: f64, text: &str, tolerance: f64| {
-            assert!(
-                (found / number(text) - 1.0).abs() < tolerance,
-                "{row:?}: {found}"
-            );
-        };
-        near(at.density_kg_per_m3, &row[5], density);
-        near(at.heat_capacity_kj_per_kg_k * 1000.0, &row[6], heat);
-        near(at.viscosity_pa_s, &row[7], viscosity);
-        near(at.conductivity_w_per_m_k, &row[8], conductivity);
-        let freezing_k = if own { 0.02 } else { 0.5 };
-        assert!(
-            (brine.freezing_c() - number(&row[4])).abs() < freezing_k,
-            "{row:?} {}",
-            brine.freezing_c()
-        );
-        seen += 1;
-    }
-    assert!(seen > 50);
 }
 
 /// What the line source leaves out in the first hours is what a cylinder without filling would add: the stated bound is its greatest

@@ -124,6 +124,8 @@ fn check_page(page: &str) {
             }
         }
         match name {
+            // The bars of a narrow form stand beside their figures in words.
+            "svg" if node.attribute("aria-hidden") == Some("true") => {}
             "svg" => {
                 assert_eq!(node.attribute("role"), Some("img"));
                 for tag in ["title", "desc"] {
@@ -239,6 +241,23 @@ fn figures_equal_the_result() {
     assert!(compared > 80, "only {compared} figures were found");
 }
 
+/// What a meter may read in each month is that of result.json, rounded.
+fn check_band(rows: &[Vec<String>], column: usize, system: &Value) {
+    let head = &rows[0][column];
+    let meters = system["meters"].as_array().unwrap();
+    let meter = meters
+        .iter()
+        .find(|meter| head.contains(meter["fuel"].as_str().unwrap()))
+        .unwrap();
+    for (row, month) in rows[1..].iter().zip(meter["months"].as_array().unwrap()) {
+        let (low, high) = row[column].split_once(" to ").unwrap();
+        for (shown, field) in [(low, "low_kwh"), (high, "high_kwh")] {
+            let exact = month[field].as_f64().unwrap();
+            assert!((figure(shown).unwrap() - exact).abs() <= 0.5 + 1e-9);
+        }
+    }
+}
+
 /// The months as printed add up to the year as printed, and each is that of result.json but for its rounding.
 #[test]
 fn months_add_up() {
@@ -252,6 +271,10 @@ fn months_add_up() {
         let rows = rows(table);
         assert_eq!(rows.len(), 14);
         for column in 1..rows[0].len() {
+            if rows[0][column].starts_with("No surprise") {
+                check_band(&rows, column, system);
+                continue;
+            }
             let shown: Vec<f64> = rows[1..]
                 .iter()
                 .map(|row| figure(&row[column]).unwrap())

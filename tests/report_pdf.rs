@@ -159,3 +159,59 @@ fn pages_are_numbered_and_of_the_size_of_the_place() {
 fn the_same_input_gives_the_same_bytes() {
     assert!(run(None).bytes == demonstration().bytes);
 }
+
+/// A brief of two systems with labels of one's own, beside the demonstration's files.
+fn brief(today: &str, choice: &str, more: &str) -> String {
+    let root = Path::new(env!("CARGO_MANIFEST_DIR"));
+    let at = |path: &str| format!("'{}'", root.join(path).display());
+    let text = |words: &str| serde_json::to_string(words).unwrap();
+    format!(
+        "{more}
+[home]
+label = {today}
+heat_loss = \"212 W/K\"
+floor_area = \"96 m²\"
+[home.emitters]
+flow = \"50 °C\"
+[weather]
+file = {}
+[energy]
+electricity = {}
+gas = {}
+[today]
+label = {today}
+kind = \"gas-boiler\"
+[[choice]]
+label = {}
+kind = \"air-source\"
+machine = {}
+",
+        at("weather_samples/morvane_sound.csv"),
+        at("tariffs/flat_electricity.toml"),
+        at("tariffs/flat_gas.toml"),
+        text(choice),
+        at("briefs/machines/air-r290-small.toml"),
+        today = text(today),
+    )
+}
+
+/// Letter is 8.5 in × 11 in at 72 points to the inch (ANSI/ASME Y14.1, size A).
+#[test]
+fn any_label_is_only_text_and_the_paper_is_that_of_the_place() {
+    let place = "[report]\ndecimal = ','\nthousands = '.'\npaper = 'letter'\n";
+    let choice = format!(
+        "<b>&\"two\" 'one'</b> =1+1 שלום 😀 \u{202e}{}",
+        "Lang".repeat(100)
+    );
+    let run = run(Some(&brief("**Haus** | (a) \\ <i>", &choice, place)));
+    for page in run.document.get_pages().into_values() {
+        let page = run.document.get_dictionary(page).unwrap();
+        let sides = page.get(b"MediaBox").unwrap().as_array().unwrap();
+        assert_eq!(sides[2].as_float().unwrap(), 612.0);
+        assert_eq!(sides[3].as_float().unwrap(), 792.0);
+    }
+    assert!(run.text.contains("**Haus** | (a) \\ <i>"), "{}", run.text);
+    assert!(run.text.contains("<b>&\"two\" 'one'</b> =1+1"));
+    let spf = run.result["systems"][1]["spf_h4"].as_f64().unwrap();
+    assert!(run.text.contains(&format!("{spf:.2}").replace('.', ",")));
+}

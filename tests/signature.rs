@@ -2,7 +2,6 @@
 //! command on the shipped readings.
 #![cfg(test)]
 
-use std::collections::BTreeMap;
 use std::fs;
 use std::path::Path;
 
@@ -13,86 +12,6 @@ use winterledger::signature::{DailyWeather, Day, Interval, Signature, Stated, fi
 
 fn root() -> &'static Path {
     Path::new(env!("CARGO_MANIFEST_DIR"))
-}
-
-fn rows(name: &str) -> Vec<Vec<String>> {
-    csv::Reader::from_path(root().join("tests/reference").join(name))
-        .unwrap()
-        .records()
-        .map(|record| record.unwrap().iter().map(str::to_owned).collect())
-        .collect()
-}
-
-/// Nothing stated: the plain three-parameter fit.
-const PLAIN: Stated = Stated {
-    efficiency: 1.0,
-    efficiency_within: 0.0,
-    hot_water_share: 0.0,
-    hot_water_share_within: 0.0,
-    hot_water_swing: 0.0,
-};
-
-/// Reference values: tests/reference/signature.py (scipy 1.17.1 curve_fit, statsmodels 0.15.0).
-#[test]
-fn signatures_agree_with_scipy_and_statsmodels() {
-    let days = rows("signature_days.csv")
-        .iter()
-        .map(|row| Day {
-            date: row[0].parse().unwrap(),
-            mean_c: row[1].parse().unwrap(),
-        })
-        .collect();
-    let weather = DailyWeather::of_days(days);
-    let mut homes: BTreeMap<String, Vec<Interval>> = BTreeMap::new();
-    for row in rows("signature_intervals.csv") {
-        homes.entry(row[0].clone()).or_default().push(Interval {
-            from: row[1].parse().unwrap(),
-            to: row[2].parse().unwrap(),
-            kwh: row[3].parse().unwrap(),
-            line: 0,
-        });
-    }
-    let expected = rows("signature_fits.csv");
-    assert_eq!(expected.len(), 8);
-    let mut odd = 0;
-    for row in expected {
-        let number = |i: usize| row[i].parse::<f64>().unwrap();
-        let found = fit(&homes[&row[0]], &weather, &PLAIN).unwrap();
-        // Both searches end within about 1e-6 K of the optimum, where the sum of squares is flat.
-        let near = |a: f64, b: f64| {
-            assert!(
-                (a - b).abs() < 2e-5 * b.abs().max(1.0),
-                "home {}: {a} and {b}",
-                row[0]
-            )
-        };
-        near(found.base_load_kwh_per_day.value, number(1));
-        near(found.slope_kwh_per_k_day, number(2));
-        near(found.base_temperature_c.value, number(3));
-        // Limits are t times the standard error; t by an independent route, scipy.stats.t.ppf(0.975, freedom), for the first.
-        let freedom = (found.n() - 3) as f64;
-        let t = statrs::distribution::StudentsT::new(0.0, 1.0, freedom)
-            .unwrap()
-            .inverse_cdf(0.975);
-        // An optimum can lie at a day's own temperature, where a day more or less counts as colder: a part in a thousand.
-        let close =
-            |a: f64, b: f64| assert!((a / b - 1.0).abs() < 1e-3, "home {}: {a} and {b}", row[0]);
-        close(found.base_load_kwh_per_day.half() / t, number(4));
-        close(
-            found.heat_loss_w_per_k.half() / t * 24.0 / 1000.0,
-            number(5),
-        );
-        close(found.base_temperature_c.half() / t, number(6));
-        near(found.r_squared, number(7));
-        near(found.cv_rmse, number(8));
-        let at: usize = row[10].parse().unwrap();
-        close(found.points[at].off, number(9));
-        odd += found.points.iter().filter(|point| point.odd).count();
-    }
-    assert!(
-        odd >= 2,
-        "the readings made 60 % too large are not called odd: {odd}"
-    );
 }
 
 /// A stream of random numbers from a seed (SplitMix64, Steele, Lea and Flood 2014).

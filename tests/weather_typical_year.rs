@@ -3,7 +3,7 @@
 
 use std::fmt::Write;
 
-use winterledger::weather::{Kind, ReadOptions, Weather, read_bytes, typical_year};
+use winterledger::weather::{ReadOptions, Weather, read_bytes, typical_year};
 
 /// Twelve synthetic years of daily means, each day made of 24 equal hours.
 fn twelve_years(columns: usize) -> Weather {
@@ -32,58 +32,6 @@ fn twelve_years(columns: usize) -> Weather {
         }
     }
     read_bytes("twelve years", text.as_bytes(), &ReadOptions::default()).unwrap()
-}
-
-#[test]
-fn months_and_statistics_agree_with_the_independent_choice() {
-    let weather = twelve_years(4);
-    let found = typical_year(std::slice::from_ref(&weather)).unwrap();
-    assert_eq!(
-        found.procedure,
-        "Finkelstein–Schafer procedure of ISO 15927-4"
-    );
-    let mut reader = csv::Reader::from_path(concat!(
-        env!("CARGO_MANIFEST_DIR"),
-        "/tests/reference/typical_year_choice.csv"
-    ))
-    .unwrap();
-    let mut rows = 0;
-    for (i, row) in reader
-        .deserialize::<(usize, i32, f64, f64, f64, usize, f64)>()
-        .enumerate()
-    {
-        let (month, year, temperature, radiation, humidity, rank_sum, wind) = row.unwrap();
-        let candidate = &found.candidates[month - 1][i % 12];
-        assert_eq!(
-            (candidate.year, candidate.rank_sum),
-            (year, rank_sum),
-            "month {month}"
-        );
-        for (ours, theirs) in candidate
-            .statistics
-            .iter()
-            .zip([temperature, radiation, humidity])
-        {
-            // Nine decimals are written.
-            assert!(
-                (ours - theirs).abs() < 1e-8,
-                "month {month} of {year}: {ours} {theirs}"
-            );
-        }
-        assert!((candidate.wind_deviation.unwrap() - wind).abs() < 1e-8);
-        if i % 12 == 0 {
-            assert_eq!(found.years[month - 1], year);
-        }
-        rows += 1;
-    }
-    assert_eq!(rows, 144);
-    assert_eq!(found.weather.axis.hours, 8760);
-    assert_eq!(
-        found.weather.kind,
-        Kind::Typical {
-            source_years: Some(found.years)
-        }
-    );
 }
 
 /// Away from the joins the hours are those of the chosen months; February of a leap year loses its last day.

@@ -12,6 +12,7 @@ use super::home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomsAnswer, StoreAnswer,
 };
 use super::lever::lever_answer;
+use super::lifetime::lifetime;
 use crate::home::Pattern;
 use crate::problem::{Finding, Problems, Severity};
 use crate::signature::{DailyWeather, Signature};
@@ -149,6 +150,8 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         systems,
         patterns: Vec::new(),
         break_even: break_evens,
+        odds: None,
+        lifetime: lifetime(case, outcomes),
         currency: case.currency.code().to_owned(),
         carbon_scope: told.carbon_scope.clone(),
         assumptions: told.assumptions.clone(),

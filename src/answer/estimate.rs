@@ -6,6 +6,8 @@ use serde::Serialize;
 
 use super::account::{BillAnswer, MeterAnswer, ShiftingAnswer};
 use super::home::{DesignAnswer, MeteredAnswer, PatternComparison, RoomsAnswer, StoreAnswer};
+use super::odds::OddsSummary;
+use super::lifetime::LifetimeAnswer;
 use crate::problem::Finding;
 
 /// The comparison of all systems of a brief.
@@ -22,6 +24,12 @@ pub struct Estimate {
     pub patterns: Vec<PatternComparison>,
     /// What would make each choice cost what today's system costs, by the choice's label.
     pub break_even: BTreeMap<String, Vec<LeverAnswer>>,
+    /// How sure it is: chances from a modest sample; absent where none was drawn. The command `odds` says more.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub odds: Option<OddsSummary>,
+    /// Money and carbon over the years; absent where no choice's capital is known.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub lifetime: Option<LifetimeAnswer>,
     /// Currency of every amount, ISO 4217.
     pub currency: String,
     /// What the carbon factors count.

@@ -216,6 +216,7 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
         Lever::LoopLength => format!("a loop of {value:.0} m (now {now:.0} m)"),
         Lever::Capital => format!("a capital of {value:.0} {code} (now {now:.0} {code})"),
         Lever::Grant => format!("a grant of {value:.0} {code} (now {now:.0} {code})"),
+        Lever::BoilerEfficiency => times("a boiler efficiency", "higher", "lower", None),
         Lever::ElectricityCarbon => times("the carbon of electricity", "higher", "lower", None),
     }
 }

@@ -8,6 +8,7 @@ use super::notes::Notes;
 use super::raw::{Home as HomeTable, RoomTable, SystemTable};
 use crate::bounds;
 use crate::document::{Check, Leaf, Section};
+use crate::fault::{self, Fault};
 use crate::home::ventilation_w_per_k;
 
 /// Where the heat loss is from.
@@ -32,7 +33,12 @@ pub(super) struct Envelope {
 
 impl Envelope {
     pub fn design_load_kw(&self) -> f64 {
-        self.heat_loss_w_per_k * (self.indoor_c - self.design_outdoor_c) / 1000.0
+        let from_c = if fault::on(Fault::BaseForPeak) {
+            15.5
+        } else {
+            self.indoor_c
+        };
+        self.heat_loss_w_per_k * (from_c - self.design_outdoor_c) / 1000.0
     }
 }
 

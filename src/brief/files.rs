@@ -10,6 +10,7 @@ use sha2::{Digest as _, Sha256};
 use super::demo;
 use crate::answer::InputFile;
 use crate::heatpump::{Fitted, Sheet, fit};
+use crate::limits::{LARGEST_DATA, read_at_most};
 use crate::problem::{Place, Problem, Problems};
 
 /// Where named files come from, and which of them were read.
@@ -27,9 +28,6 @@ enum Root {
     /// The demonstration files in the binary, by their path from the top of the repository.
     Embedded(&'static str),
 }
-
-/// Largest file that a brief may name, bytes: thirty years of minutes would be smaller.
-const LARGEST: u64 = 512 * 1024 * 1024;
 
 impl Folder {
     /// A folder of the disk.
@@ -115,15 +113,9 @@ impl Folder {
                 if !facts.is_file() {
                     return Err(refuse("is not a file".to_owned(), remedy));
                 }
-                if facts.len() > LARGEST {
-                    return Err(refuse(
-                        format!("is {} bytes long", facts.len()),
-                        "at most 512 MiB are read",
-                    ));
-                }
-                fs::read(&path)
+                read_at_most(&path, LARGEST_DATA)
                     .map(Cow::Owned)
-                    .map_err(|error| refuse(format!("cannot be read: {error}"), remedy))?
+                    .map_err(|beyond| refuse(beyond.found, &beyond.allowed))?
             }
         };
         self.note(name, &content);

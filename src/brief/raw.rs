@@ -10,6 +10,7 @@ use super::ground::{
 };
 use super::leaves::{Capital, ColdWater, HeatLossSource, HygieneBy, Line, SetBack};
 use super::lifetime::{LifetimeTable, OutlayTable};
+use super::odds::{ChoiceOddsTable, OddsTable};
 use crate::document::{Leaf, Section, Word};
 use crate::heater::GrossEfficiency;
 use crate::home::{Construction, EmitterKind, TappingProfile, WarmUp};
@@ -34,6 +35,8 @@ pub(super) struct Brief {
     pub household: Option<Section<HouseholdTable>>,
     /// How the years of a system's life are counted.
     pub lifetime: Option<Section<LifetimeTable>>,
+    /// How far home, supply and today's boiler may be off, in place of the usual ranges.
+    pub odds: Option<Section<OddsTable>>,
     /// What heats the home today.
     pub today: Option<Section<SystemTable>>,
     /// How the report is written.
@@ -492,6 +495,8 @@ pub(super) struct SystemTable {
     pub capital: Option<Leaf<Capital>>,
     /// What it costs besides, and how long its parts last.
     pub outlay: Option<Section<OutlayTable>>,
+    /// How far the choice may be off, in place of the usual ranges.
+    pub odds: Option<Section<ChoiceOddsTable>>,
 
     /// Another heat-loss coefficient, when insulating is part of the choice; the emitters stay as they are.
     pub heat_loss: Option<Leaf<HeatLossCoefficient>>,

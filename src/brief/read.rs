@@ -15,6 +15,7 @@ use super::home::WeatherFacts;
 use super::lifetime::terms;
 use super::locale::locale;
 use super::notes::Notes;
+use super::odds::said;
 use super::raw;
 use super::system::{Surroundings, contender};
 use super::weather::weather;
@@ -26,6 +27,7 @@ use crate::locale::Locale;
 use crate::problem::Problems;
 use crate::signature::DailyWeather;
 use crate::source::{AnnualSwing, undisturbed_c};
+use crate::study::odds::Doubts;
 use crate::study::{Case, scale_to_fuel};
 use crate::units::{Diffusivity, parse};
 use crate::weather::Weather;
@@ -40,6 +42,10 @@ pub struct Brief {
     pub told: Told,
     /// How figures are written.
     pub locale: Locale,
+    /// What is not known for certain.
+    pub doubts: Doubts,
+    /// Standard error to which every chance is to be known, as a fraction; nothing where the brief does not say.
+    pub precision: Option<f64>,
 }
 
 impl Brief {
@@ -180,6 +186,7 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         .choice
         .iter()
         .any(|choice| choice.capital.is_some() || choice.outlay.is_some());
+    let unsure = said(raw, check);
     let terms = terms(raw.lifetime.as_ref(), told, check, &mut notes);
     let Energy {
         currency,
@@ -193,6 +200,13 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         _ => None,
     };
     case.age_grounds();
+    let (price_correlation, precision) = (unsure.price_correlation, unsure.precision);
+    // Ranges belong to systems by their place, which is only known when all of them could be read.
+    let declared = match check.problems().is_empty() {
+        true => unsure.checked(&case, check, &mut notes),
+        false => Vec::new(),
+    };
+    let doubts = Doubts::of(&case, &declared, price_correlation);
     Some(Brief {
         case,
         told: Told {
@@ -208,6 +222,8 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
             bills,
         },
         locale,
+        doubts,
+        precision,
     })
 }
 

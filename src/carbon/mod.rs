@@ -13,6 +13,7 @@ pub use scope::Scope;
 
 use crate::bounds::CARBON_KG_PER_KWH;
 use crate::calendar::CivilHour;
+use crate::fault::{self, Fault};
 use crate::problem::{Place, Problem, Problems};
 use crate::series::Series;
 use crate::units::Fuel;
@@ -103,7 +104,7 @@ impl Factors {
             .first()
             .map_or(Scope::default(), |factor| factor.scope);
         for (i, factor) in factors.iter().enumerate() {
-            if factor.scope != scope {
+            if factor.scope != scope && !fault::on(Fault::ScopesMixed) {
                 let first = factors
                     .first()
                     .map_or(Fuel::Electricity, |factor| factor.fuel);

@@ -1,10 +1,10 @@
 //! Cost of a year, system by system: one bar each, split into energy, standing charges and tax.
 
-use super::bars::{self, Bar, Part};
-use super::numbers::{self, Marks, money_unit};
+use super::bars::{self, Part};
+use super::numbers::{Marks, money_unit};
 use super::palette::{CORAL, Hatch, NAVY, PERIWINKLE};
 use super::scene::Scene;
-use super::{ChartError, Picture, finite, named};
+use super::{ChartError, Picture, finite};
 
 const PICTURE: &str = "cost of a year";
 
@@ -69,58 +69,23 @@ pub fn annual_cost(data: &AnnualCost, marks: &Marks) -> Result<Picture, ChartErr
         }
     }
     let money = |v: f64| marks.money(&data.currency, v);
-    let today = data.systems.iter().find(|s| s.today);
-    let compared = today.is_some() && data.systems.len() > 1;
-    let subtitle = if compared {
+    let systems = data.systems.iter();
+    let bars = bars::compared(
+        systems.map(|s| (s.label.as_str(), s.today, vec![s.energy, s.standing, s.tax])),
+        &money,
+    );
+    let subtitle = if bars::has_comparison(&bars) {
         "Bills of one year by system. The dashed mark is what today’s system costs."
     } else {
         "Bills of one year by system."
     };
-    let bars: Vec<Bar<'_>> = data
-        .systems
-        .iter()
-        .map(|s| Bar {
-            label: &s.label,
-            today: s.today,
-            parts: vec![s.energy, s.standing, s.tax],
-            remark: match today {
-                Some(today) if !s.today => bars::difference(s.total(), today.total(), &money),
-                _ => String::new(),
-            },
-        })
-        .collect();
     let title = "What a year costs to run";
     let mut scene = Scene::new(f64::MAX);
     let top = scene.heading(title, subtitle);
     let axis = format!("Cost of a year, {}", money_unit(&data.currency));
     bars::draw(&mut scene, top, &bars, &PARTS, &axis, &money, marks);
-    Ok(Picture::new(title, alt(data, &bars, &money), scene))
-}
-
-fn alt(data: &AnnualCost, bars: &[Bar<'_>], money: &dyn Fn(f64) -> String) -> String {
-    let mut out = format!(
-        "Bar chart of what a year costs to run, {} {}.",
-        bars.len(),
-        if bars.len() == 1 { "system" } else { "systems" }
-    );
-    for (system, bar) in data.systems.iter().zip(bars) {
-        let mut parts = vec![
-            format!("energy {}", money(system.energy)),
-            format!("standing charges {}", money(system.standing)),
-        ];
-        if system.tax != 0.0 {
-            parts.push(format!("tax {}", money(system.tax)));
-        }
-        let when = if system.today { " (today)" } else { "" };
-        out += &format!(
-            " {}{when}: {}{}, made of {}.",
-            named(&system.label),
-            money(system.total()),
-            bars::against_today(&bar.remark),
-            numbers::list(&parts)
-        );
-    }
-    out
+    let alt = bars::in_words("what a year costs to run", &bars, &PARTS, &money);
+    Ok(Picture::new(title, alt, scene))
 }
 
 #[cfg(test)]

@@ -7,7 +7,7 @@ use super::key::Swatch;
 use super::label::{Anchor, BODY, SMALL, Type};
 use super::palette::{AXIS, Colour, Dash, GRID, Hatch, INK, MUTED, WHITE};
 use super::scene::{MARGIN, Scene, WIDTH};
-use super::{Marks, named};
+use super::{Marks, named, numbers};
 
 /// One bar.
 pub(crate) struct Bar<'a> {
@@ -27,6 +27,68 @@ impl Bar<'_> {
     fn side(&self, sign: f64) -> f64 {
         self.parts.iter().map(|p| (sign * p).max(0.0)).sum()
     }
+}
+
+/// The bars of systems, each with what it is more or less than that of today, as `write` writes it.
+pub(crate) fn compared<'a>(
+    systems: impl Iterator<Item = (&'a str, bool, Vec<f64>)>,
+    write: &dyn Fn(f64) -> String,
+) -> Vec<Bar<'a>> {
+    let mut bars: Vec<Bar<'a>> = systems
+        .map(|(label, today, parts)| Bar {
+            label,
+            today,
+            parts,
+            remark: String::new(),
+        })
+        .collect();
+    let today = bars.iter().find(|bar| bar.today).map(Bar::whole);
+    for bar in bars.iter_mut().filter(|bar| !bar.today) {
+        if let Some(today) = today {
+            bar.remark = difference(bar.whole(), today, write);
+        }
+    }
+    bars
+}
+
+/// Whether there is a bar of today that others are compared with.
+pub(crate) fn has_comparison(bars: &[Bar<'_>]) -> bool {
+    bars.len() > 1 && bars.iter().any(|bar| bar.today)
+}
+
+/// The bars as sentences behind `what` they show; parts that are nothing are left out.
+pub(crate) fn in_words(
+    what: &str,
+    bars: &[Bar<'_>],
+    parts: &[Part],
+    write: &dyn Fn(f64) -> String,
+) -> String {
+    let mut out = format!(
+        "Bar chart of {what}, {} {}.",
+        bars.len(),
+        if bars.len() == 1 { "system" } else { "systems" }
+    );
+    for bar in bars {
+        let made_of: Vec<String> = parts
+            .iter()
+            .zip(&bar.parts)
+            .filter(|(_, amount)| **amount != 0.0)
+            .map(|((name, ..), amount)| format!("{} {}", name.to_lowercase(), write(*amount)))
+            .collect();
+        let made_of = if made_of.is_empty() {
+            String::new()
+        } else {
+            format!(", made of {}", numbers::list(&made_of))
+        };
+        let when = if bar.today { " (today)" } else { "" };
+        out += &format!(
+            " {}{when}: {}{}{made_of}.",
+            named(bar.label),
+            write(bar.whole()),
+            against_today(&bar.remark)
+        );
+    }
+    out
 }
 
 /// Name and look of a part.
@@ -175,7 +237,7 @@ fn draw_bar(
 
 /// How a bar compares with today's: so much less or more, or about the same when the difference would be written
 /// as nothing.
-pub(crate) fn difference(value: f64, today: f64, write: &dyn Fn(f64) -> String) -> String {
+fn difference(value: f64, today: f64, write: &dyn Fn(f64) -> String) -> String {
     let saved = today - value;
     match write(saved.abs()) {
         same if same == write(0.0) => "about the same".into(),
@@ -185,7 +247,7 @@ pub(crate) fn difference(value: f64, today: f64, write: &dyn Fn(f64) -> String) 
 }
 
 /// The remark of a bar as the end of a sentence.
-pub(crate) fn against_today(remark: &str) -> String {
+fn against_today(remark: &str) -> String {
     match remark {
         "" => String::new(),
         "about the same" => ", about the same as today".into(),

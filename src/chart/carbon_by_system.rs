@@ -1,10 +1,10 @@
 //! Carbon of a year, system by system, split by where it comes from.
 
-use super::bars::{self, Bar, Part};
-use super::numbers::{self, Marks};
+use super::bars::{self, Part};
+use super::numbers::Marks;
 use super::palette::{AZURE, BROWN, Hatch, MINT};
 use super::scene::Scene;
-use super::{ChartError, Picture, finite, named};
+use super::{ChartError, Picture, finite};
 
 const PICTURE: &str = "carbon of a year";
 
@@ -69,24 +69,14 @@ pub fn carbon_by_system(data: &CarbonBySystem, marks: &Marks) -> Result<Picture,
         }
     }
     let kg = |v: f64| format!("{}\u{a0}kg", marks.number(v, 0));
-    let today = data.systems.iter().find(|s| s.today);
-    let bars: Vec<Bar<'_>> = data
-        .systems
-        .iter()
-        .map(|s| Bar {
-            label: &s.label,
-            today: s.today,
-            parts: vec![s.electricity_kg, s.fuel_kg, s.refrigerant_kg],
-            remark: match today {
-                Some(today) if !s.today => bars::difference(s.total(), today.total(), &kg),
-                _ => String::new(),
-            },
-        })
-        .collect();
-    // A part that no system has needs no place in the key.
-    let used = |i: usize| bars.iter().any(|b| b.parts[i] != 0.0);
-    let keep: Vec<usize> = (0..3).filter(|&i| i < 2 || used(i)).collect();
-    let parts: Vec<Part> = keep.iter().map(|&i| PARTS[i]).collect();
+    let systems = data.systems.iter();
+    let bars = bars::compared(
+        systems.map(|s| {
+            let parts = vec![s.electricity_kg, s.fuel_kg, s.refrigerant_kg];
+            (s.label.as_str(), s.today, parts)
+        }),
+        &kg,
+    );
 
     let title = "Carbon of a year";
     let scope = super::font::clean(&data.scope);
@@ -96,7 +86,7 @@ pub fn carbon_by_system(data: &CarbonBySystem, marks: &Marks) -> Result<Picture,
     } else {
         format!(": {scope}.")
     };
-    if today.is_some() && data.systems.len() > 1 {
+    if bars::has_comparison(&bars) {
         subtitle += " The dashed mark is today’s system.";
     }
     let mut scene = Scene::new(f64::MAX);
@@ -105,44 +95,14 @@ pub fn carbon_by_system(data: &CarbonBySystem, marks: &Marks) -> Result<Picture,
         &mut scene,
         top,
         &bars,
-        &parts,
+        &PARTS,
         "Carbon of a year, kg CO₂e",
         &kg,
         marks,
     );
-    Ok(Picture::new(title, alt(data, &bars, &kg), scene))
-}
-
-fn alt(data: &CarbonBySystem, bars: &[Bar<'_>], kg: &dyn Fn(f64) -> String) -> String {
-    let mut out = format!(
-        "Bar chart of the greenhouse gases of a year, in kg CO₂e, {} {}.",
-        bars.len(),
-        if bars.len() == 1 { "system" } else { "systems" }
-    );
-    for (system, bar) in data.systems.iter().zip(bars) {
-        let parts: Vec<String> = [
-            ("electricity", system.electricity_kg),
-            ("fuel", system.fuel_kg),
-            ("refrigerant", system.refrigerant_kg),
-        ]
-        .iter()
-        .filter(|(_, v)| *v != 0.0)
-        .map(|(name, v)| format!("{name} {}", kg(*v)))
-        .collect();
-        let from = if parts.is_empty() {
-            String::new()
-        } else {
-            format!(", made of {}", numbers::list(&parts))
-        };
-        let when = if system.today { " (today)" } else { "" };
-        out += &format!(
-            " {}{when}: {}{}{from}.",
-            named(&system.label),
-            kg(system.total()),
-            bars::against_today(&bar.remark)
-        );
-    }
-    out
+    let what = "the greenhouse gases of a year, in kg CO₂e";
+    let alt = bars::in_words(what, &bars, &PARTS, &kg);
+    Ok(Picture::new(title, alt, scene))
 }
 
 #[cfg(test)]

@@ -1,11 +1,9 @@
 //! Carbon of each year of the life, system by system, as the electricity of the grid changes.
 
-use super::ends::{self, End};
+use super::ends::{self, Course};
 use super::frame::{Axis, Frame};
-use super::geometry::Rect;
 use super::numbers::Marks;
-use super::palette::series;
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::Scene;
 use super::{ChartError, Picture, finite, font, named};
 
 const PICTURE: &str = "carbon by year";
@@ -79,12 +77,7 @@ pub fn carbon_by_year(data: &CarbonByYear, marks: &Marks) -> Result<Picture, Cha
         ..*marks
     };
     let frame = Frame::inside(
-        Rect {
-            left: MARGIN,
-            top,
-            right: WIDTH - MARGIN - RIGHT + 12.0,
-            bottom: top + PLOT,
-        },
+        ends::area(top, PLOT, RIGHT),
         Axis::tight("Year", year(0), year(years - 1), 6, &plain),
         Axis::linear(
             "kg CO₂e in the year",
@@ -95,30 +88,21 @@ pub fn carbon_by_year(data: &CarbonByYear, marks: &Marks) -> Result<Picture, Cha
         ),
     );
     frame.draw(&mut scene);
-    let mut names = Vec::new();
-    for (i, system) in data.systems.iter().enumerate() {
-        let look = series(i);
-        let line: Vec<(f64, f64)> = system
-            .carbon_kg
-            .iter()
-            .enumerate()
-            .map(|(y, v)| (year(y), *v))
-            .collect();
-        let width = if system.today { 3.4 } else { 2.6 };
-        frame.line(&mut scene, &line, look.colour, width, look.dash);
-        for point in line.iter().skip(i % 5).step_by(5) {
-            scene.mark(frame.at(point.0, point.1), 4.4, look);
-        }
-        if let Some(last) = line.last() {
-            names.push(End {
-                at: frame.at(last.0, last.1),
-                text: named(&system.label).into(),
-                colour: look.colour,
-                bold: system.today,
-            });
-        }
-    }
-    ends::draw(&mut scene, &frame, &names, RIGHT);
+    let courses: Vec<Course<'_>> = data
+        .systems
+        .iter()
+        .map(|system| Course {
+            label: &system.label,
+            today: system.today,
+            points: system
+                .carbon_kg
+                .iter()
+                .enumerate()
+                .map(|(y, v)| (year(y), *v))
+                .collect(),
+        })
+        .collect();
+    ends::courses(&mut scene, &frame, &courses, RIGHT);
     Ok(Picture::new(title, alt(data, years, marks), scene))
 }
 

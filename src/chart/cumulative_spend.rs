@@ -1,13 +1,12 @@
 //! All that is spent year after year, system by system, with the years in which a choice has caught up with today.
 
-use super::ends::{self, End};
+use super::ends::{self, Course};
 use super::font::Weight;
 use super::frame::{Axis, Frame, around};
-use super::geometry::Rect;
 use super::label::{SMALL, Type};
 use super::numbers::{self, Marks, money_unit};
-use super::palette::{INK, WHITE, series};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::palette::{INK, WHITE};
+use super::scene::Scene;
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "spend over the years";
@@ -91,40 +90,26 @@ pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture
     let high = all().fold(f64::NEG_INFINITY, f64::max);
     let y_title = format!("Spent so far, {}", money_unit(&data.currency));
     let frame = Frame::inside(
-        Rect {
-            left: MARGIN,
-            top,
-            right: WIDTH - MARGIN - RIGHT + 12.0,
-            bottom: top + PLOT,
-        },
+        ends::area(top, PLOT, RIGHT),
         Axis::tight("Years from now", 0.0, (years - 1) as f64, 6, marks),
         Axis::linear(&y_title, low, high, 6, marks),
     );
     frame.draw(&mut scene);
-    let mut names = Vec::new();
-    for (i, system) in data.systems.iter().enumerate() {
-        let look = series(i);
-        let line: Vec<(f64, f64)> = system
-            .spent
-            .iter()
-            .enumerate()
-            .map(|(y, v)| (y as f64, *v))
-            .collect();
-        let width = if system.today { 3.4 } else { 2.6 };
-        frame.line(&mut scene, &line, look.colour, width, look.dash);
-        for point in line.iter().skip(i % 5).step_by(5) {
-            scene.mark(frame.at(point.0, point.1), 4.4, look);
-        }
-        if let Some(last) = line.last() {
-            names.push(End {
-                at: frame.at(last.0, last.1),
-                text: named(&system.label).into(),
-                colour: look.colour,
-                bold: system.today,
-            });
-        }
-    }
-    ends::draw(&mut scene, &frame, &names, RIGHT);
+    let courses: Vec<Course<'_>> = data
+        .systems
+        .iter()
+        .map(|system| Course {
+            label: &system.label,
+            today: system.today,
+            points: system
+                .spent
+                .iter()
+                .enumerate()
+                .map(|(y, v)| (y as f64, *v))
+                .collect(),
+        })
+        .collect();
+    ends::courses(&mut scene, &frame, &courses, RIGHT);
     let set = Type::new(SMALL, Weight::Bold, INK);
     for (_, (year, spent)) in caught_up(data) {
         let (x, y) = frame.at(year, spent);

@@ -2,9 +2,11 @@
 
 use super::font::{self, Weight};
 use super::frame::Frame;
+use super::geometry::Rect;
 use super::label::{Anchor, SMALL, Type};
-use super::palette::{Colour, INK};
-use super::scene::Scene;
+use super::named;
+use super::palette::{Colour, INK, series};
+use super::scene::{MARGIN, Scene, WIDTH};
 
 /// Height of a line of a name.
 const LINE: f64 = 16.5;
@@ -18,6 +20,45 @@ pub(crate) struct End {
     pub text: String,
     pub colour: Colour,
     pub bold: bool,
+}
+
+/// The line of one system over the years.
+pub(crate) struct Course<'a> {
+    pub label: &'a str,
+    pub today: bool,
+    pub points: Vec<(f64, f64)>,
+}
+
+/// Room of a plot of a height below `top` that leaves `room` at the right for the names.
+pub(crate) fn area(top: f64, height: f64, room: f64) -> Rect {
+    Rect {
+        left: MARGIN,
+        top,
+        right: WIDTH - MARGIN - room + 12.0,
+        bottom: top + height,
+    }
+}
+
+/// Draws the lines of systems, each in its look, with marks in turn and its name at its end.
+pub(crate) fn courses(scene: &mut Scene, frame: &Frame, courses: &[Course<'_>], room: f64) {
+    let mut names = Vec::new();
+    for (i, course) in courses.iter().enumerate() {
+        let look = series(i);
+        let width = if course.today { 3.4 } else { 2.6 };
+        frame.line(scene, &course.points, look.colour, width, look.dash);
+        for point in course.points.iter().skip(i % 5).step_by(5) {
+            scene.mark(frame.at(point.0, point.1), 4.4, look);
+        }
+        if let Some(last) = course.points.last() {
+            names.push(End {
+                at: frame.at(last.0, last.1),
+                text: named(course.label).into(),
+                colour: look.colour,
+                bold: course.today,
+            });
+        }
+    }
+    draw(scene, frame, &names, room);
 }
 
 /// Writes the names right of the frame in a column of `room`, each with a thin line to its end.

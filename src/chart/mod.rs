@@ -48,6 +48,7 @@ mod carpet;
 mod coldest_days;
 mod contours;
 mod cop_year;
+mod cost_odds;
 mod cumulative_spend;
 mod demand_and_output;
 mod duration_curve;
@@ -57,7 +58,9 @@ mod load_duration;
 mod machine_performance;
 mod monthly;
 mod pressure_enthalpy;
+mod saving_odds;
 mod signature;
+mod spread_shares;
 mod swings;
 
 pub use annual_cost::{AnnualCost, SystemCost, annual_cost};
@@ -70,6 +73,7 @@ pub use carpet::{Carpet, Spell, calendar_months, carpet};
 pub use coldest_days::{ColdHour, ColdestDays, coldest_days};
 pub use contours::{Contours, contours};
 pub use cop_year::{CopSystem, CopYear, cop_year};
+pub use cost_odds::{CostOdds, CostSpread, cost_odds};
 pub use cumulative_spend::{CumulativeSpend, SystemSpend, cumulative_spend};
 pub use demand_and_output::{DemandAndOutput, demand_and_output};
 pub use duration_curve::{DurationCurve, duration_curve};
@@ -88,10 +92,12 @@ pub use numbers::Marks;
 pub use paint::PNG_PIXELS;
 pub use palette::Colour;
 pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
+pub use saving_odds::{ChoiceSaving, SavingOdds, saving_odds};
 #[cfg(feature = "pdf")]
 pub(crate) use scene::Item;
 pub use scene::WIDTH;
 pub use signature::{MeterPoint, SignaturePlot, signature_plot};
+pub use spread_shares::{SpreadShares, UnknownShare, spread_shares};
 pub use swings::{Swing, Swings, swings};
 
 use std::fmt;

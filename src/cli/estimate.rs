@@ -4,11 +4,14 @@ use std::error::Error;
 use std::path::{Path, PathBuf};
 
 use super::progress::Progress;
+use super::sampling::draw;
 use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
+use crate::answer::odds::{OddsSummary, summary};
 use crate::answer::{Estimate, compare_patterns, compose};
 use crate::brief::{Brief, DEFAULTS};
 use crate::chart::ChartError;
 use crate::home::Pattern;
+use crate::locale::Marks;
 use crate::problem::Problems;
 #[cfg(feature = "pdf")]
 use crate::report::report_pdf;
@@ -16,6 +19,7 @@ use crate::report::{
     Drawn, Material, accounts_text, estimate_text, home_text, ledger_csv, patterns_text, pictures,
     report_html,
 };
+use crate::study::odds::Sampler;
 use crate::study::{Outcome, bills};
 use crate::year::Ledger;
 
@@ -62,6 +66,9 @@ pub struct Args {
     /// Also run every system all day at its set point beside a set-back.
     #[arg(long)]
     patterns: bool,
+    /// Samples for the odds of every choice, in blocks of 20; 0 leaves them out. `odds` draws more and says what to find out.
+    #[arg(long, default_value_t = 80, value_parser = clap::value_parser!(u32).range(0..=100_000))]
+    samples: u32,
     /// Print every default with its source, and stop.
     #[arg(long)]
     show_defaults: bool,
@@ -100,6 +107,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
     progress.at("break-even");
     let mut estimate = compose(&brief.case, &outcomes, &brief.told)?;
+    estimate.odds = odds_in_brief(&brief, args.samples as usize)?;
     if args.bills {
         estimate = estimate.with_bills(&brief.case, &outcomes)?;
     }
@@ -123,13 +131,27 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     match args.format {
         Format::Json => print_json(&estimate),
         Format::Text => {
-            let mut text = text(&estimate, args);
+            let mut text = text(&estimate, &brief.locale.marks, args);
             if args.bills {
                 text += &format!("\n\n{}", accounts(&estimate, &brief, &outcomes)?);
             }
             print(&text)
         }
     }
+}
+
+/// The odds of every choice from a modest sample; nothing where none was wished for.
+fn odds_in_brief(brief: &Brief, samples: usize) -> Result<Option<OddsSummary>, Problems> {
+    /// Samples of a block.
+    const BLOCK: usize = 20;
+    /// The same seed as that of `odds`; the same estimate gives the same bytes.
+    const SEED: u64 = 1;
+    if samples == 0 {
+        return Ok(None);
+    }
+    let sampler = Sampler::new(brief.case.clone(), brief.doubts.clone(), SEED, BLOCK)?;
+    let drawing = draw(&sampler, samples.div_ceil(BLOCK), None, None)?;
+    Ok(summary(&brief.case, &sampler, &drawing.blocks))
 }
 
 /// The bills of every system and what its meters should read.
@@ -171,8 +193,8 @@ fn files(folder: &Path, material: &Material<'_>) -> Result<Vec<NewFile>, Box<dyn
     Ok(files)
 }
 
-fn text(estimate: &Estimate, args: &Args) -> String {
-    let mut text = estimate_text(estimate, args.assumptions);
+fn text(estimate: &Estimate, marks: &Marks, args: &Args) -> String {
+    let mut text = estimate_text(estimate, marks, args.assumptions);
     if args.home {
         text += &format!("\n\n{}", home_text(estimate));
     }

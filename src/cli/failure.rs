@@ -19,6 +19,11 @@ pub enum Failure {
         /// Why it was not, and what to do.
         reason: String,
     },
+    /// Somebody stopped the work; what was done by then has been told: status 130, as shells give it.
+    Interrupted {
+        /// How much was done.
+        done: String,
+    },
     /// Whoever read our output stopped reading, which is their right: status 0.
     ReaderGone,
 }
@@ -46,6 +51,10 @@ impl Failure {
             Self::Write { path, reason } => {
                 anstream::eprintln!("cannot write {}: {reason}", path.display());
                 ExitCode::from(3)
+            }
+            Self::Interrupted { done } => {
+                anstream::eprintln!("interrupted: the answer is from {done}, whole blocks only");
+                ExitCode::from(130)
             }
             Self::ReaderGone => ExitCode::SUCCESS,
         }

@@ -18,6 +18,7 @@ mod odds;
 mod output;
 mod progress;
 mod rating;
+mod sampling;
 mod schema;
 mod study;
 mod tariff;

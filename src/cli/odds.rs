@@ -2,42 +2,49 @@
 
 use std::path::PathBuf;
 
-use indicatif::{ProgressBar, ProgressStyle};
-
-use super::{Failure, Format, print, print_json, warn};
-use crate::answer::odds::{OddsAnswer, odds};
+use super::sampling::{Stop, draw};
+use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
+use crate::answer::odds::{OddsAnswer, Wish, odds};
 use crate::brief::Brief;
-use crate::report::odds_text;
-use crate::study::odds::{Sampler, Uncertain};
+use crate::report::{Drawn, odds_pictures, odds_text, samples_csv};
+use crate::study::odds::{Sample, Sampler};
 
 /// Samples of a block: whole blocks are drawn, their scatter gives the sampling errors.
 const BLOCK: usize = 50;
-/// Correlation of the prices of electricity and gas: gas stations set the price of electricity in many hours. Common practice, no
-/// source.
-const PRICE_CORRELATION: f64 = 0.6;
+/// Names of the files that are written beside the pictures.
+const RESULT: &str = "odds.json";
+const SAMPLES: &str = "samples.csv";
 
 /// How sure the comparison is: chances, what matters most, what to find out next.
 ///
-/// Every quantity that is not known for certain is drawn from its usual spread, all together, and every system is run for a year.
-/// Without a brief it runs the demonstration home that is built in.
+/// Every quantity that is not known for certain is drawn from its range, all together, and every system is run for a year. The ranges
+/// are the usual ones, or those of the tables [odds] and [choice.odds] of the brief. Without a brief it runs the demonstration home
+/// that is built in. Ctrl-C finishes the block that was begun and answers with what is done; the exit status is then 130.
 #[derive(Debug, clap::Args)]
 #[command(after_help = "\
 Examples:
   winterledger odds                            the built-in demonstration home
   winterledger odds briefs/terrace.toml --samples 2000
-  winterledger odds --precision 1              until every chance is known to 1 %")]
+  winterledger odds --precision 1              until every chance is known to 1 %
+  winterledger odds --out out                  the pictures, odds.json and every sample (CSV)")]
 pub struct Args {
     /// Brief (TOML); without one, the built-in demonstration home.
     brief: Option<PathBuf>,
     /// Most samples that are drawn.
     #[arg(long, default_value_t = 400, value_parser = clap::value_parser!(u32).range(100..=1_000_000))]
     samples: u32,
-    /// Stop sooner when every chance is known to this standard error, %.
+    /// Stop sooner when every chance is known to this standard error, %; else what the brief asks for.
     #[arg(long, value_name = "PERCENT")]
     precision: Option<f64>,
     /// Seed of the samples: the same seed gives the same bytes.
     #[arg(long, default_value_t = 1)]
     seed: u64,
+    /// Folder for the pictures, odds.json and samples.csv.
+    #[arg(long, value_name = "DIR")]
+    out: Option<PathBuf>,
+    /// Overwrite files that are there already.
+    #[arg(long)]
+    force: bool,
     /// How to print the result.
     #[arg(long, value_enum, default_value_t)]
     format: Format,
@@ -46,10 +53,11 @@ pub struct Args {
 /// Runs the command.
 ///
 /// # Errors
-/// When the brief or an argument cannot be used.
+/// When the brief or an argument cannot be used, a file cannot be written, or somebody interrupted it.
 pub fn run(args: &Args) -> Result<(), Failure> {
     /// No chance is known better from samples than this, %.
     const FINEST: f64 = 0.05;
+    let stop = Stop::listen();
     if let Some(precision) = args.precision
         && !(FINEST..=50.0).contains(&precision)
     {
@@ -63,66 +71,66 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         Some(path) => Brief::read(path)?,
         None => Brief::demonstration()?,
     };
-    let outcomes = brief.case.run()?;
-    let uncertain = Uncertain::usual(&brief.case);
-    let sampler = Sampler::new(
-        brief.case.clone(),
-        uncertain,
-        PRICE_CORRELATION,
-        args.seed,
-        BLOCK,
-    )?;
-    let most = (args.samples as usize).div_ceil(BLOCK);
-    let progress = ProgressBar::new(most as u64).with_style(
-        ProgressStyle::with_template("{bar:30} {pos} of {len} blocks, {eta} left")
-            .unwrap_or_else(|_| ProgressStyle::default_bar()),
-    );
-    let mut blocks = Vec::new();
-    let mut answer: Option<OddsAnswer> = None;
-    for block in 0..most {
-        blocks.push(sampler.block(block)?);
-        progress.inc(1);
-        // The levers' break-evens are only needed once.
-        if block + 1 == most
-            || (args.precision.is_some() && blocks.len() >= 4 && precise(&blocks, args.precision))
-        {
-            answer = odds(&brief.case, &outcomes, &sampler, &blocks, args.seed)?;
-            break;
-        }
+    if let Some(folder) = &args.out {
+        check_folder(folder, &[RESULT, SAMPLES], args.force)?;
     }
-    progress.finish_and_clear();
+    let outcomes = brief.case.run()?;
+    let sampler = Sampler::new(brief.case.clone(), brief.doubts.clone(), args.seed, BLOCK)?;
+    let most = (args.samples as usize).div_ceil(BLOCK);
+    let precision = args.precision.map(|percent| percent / 100.0);
+    let precision = precision.or(brief.precision);
+    let drawing = draw(&sampler, most, precision, Some(&stop))?;
+    let wish = Wish {
+        precision,
+        interrupted: drawing.interrupted,
+    };
+    let answer = odds(&brief.case, &outcomes, &sampler, &drawing.blocks, wish)?;
     let Some(mut answer) = answer else {
         return Err(Failure::Usage(
             "the brief has no choice to give odds for".to_owned(),
         ));
     };
-    answer.findings = brief.told.findings.clone();
+    answer.findings.extend(brief.told.findings.iter().cloned());
     warn(&answer.findings);
-    match args.format {
-        Format::Json => print_json(&answer),
-        Format::Text => print(&odds_text(&answer)),
+    if let Some(folder) = &args.out {
+        let files = files(folder, &answer, &sampler, &drawing.blocks, &brief);
+        let files = files.map_err(|error| Failure::Write {
+            path: folder.clone(),
+            reason: error.to_string(),
+        })?;
+        write_files(&files, args.force)?;
     }
+    match args.format {
+        Format::Json => print_json(&answer)?,
+        Format::Text => print(&odds_text(&answer))?,
+    }
+    if drawing.interrupted {
+        return Err(Failure::Interrupted {
+            done: format!("{} of {} samples", answer.samples, most * BLOCK),
+        });
+    }
+    Ok(())
 }
 
-/// Whether every choice's chance against today is known well enough.
-fn precise(blocks: &[Vec<crate::study::odds::Sample>], percent: Option<f64>) -> bool {
-    let Some(percent) = percent else { return false };
-    let systems = blocks
-        .first()
-        .and_then(|block| block.first())
-        .map_or(0, |sample| sample.systems.len());
-    (1..systems).all(|place| {
-        let saving: Vec<Vec<f64>> = blocks
-            .iter()
-            .map(|block| {
-                block
-                    .iter()
-                    .map(|sample| sample.systems[0].cost - sample.systems[place].cost)
-                    .collect()
-            })
-            .collect();
-        let chance =
-            crate::study::odds::Chance::of(saving.iter().map(Vec::as_slice), |saving| saving > 0.0);
-        chance.is_some_and(|chance| chance.error * 100.0 <= percent)
-    })
+/// Everything that goes into the folder.
+fn files(
+    folder: &std::path::Path,
+    answer: &OddsAnswer,
+    sampler: &Sampler,
+    blocks: &[Vec<Sample>],
+    brief: &Brief,
+) -> Result<Vec<NewFile>, Box<dyn std::error::Error>> {
+    let mut files = vec![
+        NewFile::new(folder.join(RESULT), serde_json::to_vec_pretty(answer)?),
+        NewFile::new(
+            folder.join(SAMPLES),
+            samples_csv(&brief.case, sampler, blocks)?,
+        ),
+    ];
+    for Drawn { name, picture, .. } in odds_pictures(answer, &brief.case, blocks, &brief.locale)? {
+        let path = |ending: &str| folder.join(format!("{name}.{ending}"));
+        files.push(NewFile::new(path("svg"), picture.svg()?));
+        files.push(NewFile::new(path("png"), picture.png()?));
+    }
+    Ok(files)
 }

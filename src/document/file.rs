@@ -1,12 +1,9 @@
 //! Reading a text file that is small enough to be one of ours.
 
-use std::fs;
 use std::path::Path;
 
+use crate::limits::{LARGEST_TEXT, read_at_most};
 use crate::problem::{Place, Problem, Problems};
-
-/// Largest text input that is read, bytes: far above any real brief, sheet or tariff.
-const LARGEST_TEXT: u64 = 4 * 1024 * 1024;
 
 /// Reads a text file.
 ///
@@ -22,29 +19,8 @@ pub fn read_text(path: &Path) -> Result<String, Problems> {
             remedy,
         ))
     };
-    let length = fs::metadata(path)
-        .map_err(|e| {
-            problem(
-                format!("cannot be read: {e}"),
-                "a readable file",
-                "check the path",
-            )
-        })?
-        .len();
-    if length > LARGEST_TEXT {
-        return Err(problem(
-            format!("{length} bytes"),
-            "at most 4 MiB",
-            "is this the right file?",
-        ));
-    }
-    let bytes = fs::read(path).map_err(|e| {
-        problem(
-            format!("cannot be read: {e}"),
-            "a readable file",
-            "check the path",
-        )
-    })?;
+    let bytes = read_at_most(path, LARGEST_TEXT)
+        .map_err(|beyond| problem(beyond.found, &beyond.allowed, "is this the right file?"))?;
     let text = String::from_utf8(bytes).map_err(|e| {
         let at = e.utf8_error().valid_up_to();
         problem(

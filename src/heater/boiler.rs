@@ -2,6 +2,7 @@
 
 use super::efficiency::GrossEfficiency;
 use super::flue::Combustion;
+use crate::fault::{self, Fault};
 use crate::units::Fuel;
 
 /// Flue gas leaves this much warmer than the water comes back, K: 2 to 10 K, methods §6 \[from memory\].
@@ -68,6 +69,23 @@ impl Boiler {
         }
     }
 
+    /// The same boiler with an efficiency that is a multiple of it, as far as a boiler can reach.
+    pub fn with_efficiency_times(self, factor: f64) -> Self {
+        let efficiency = match self.efficiency {
+            BoilerEfficiency::Seasonal(seasonal) => BoilerEfficiency::Seasonal(
+                GrossEfficiency::new((seasonal.fraction() * factor).min(1.0)).unwrap_or(seasonal),
+            ),
+            BoilerEfficiency::FollowingReturn {
+                combustion,
+                field_factor,
+            } => BoilerEfficiency::FollowingReturn {
+                combustion,
+                field_factor: (field_factor * factor).min(1.0),
+            },
+        };
+        Self { efficiency, ..self }
+    }
+
     /// Heat out per fuel in on gross calorific value when the water comes back at a temperature (°C).
     pub fn gross_efficiency(&self, return_c: f64) -> f64 {
         match self.efficiency {
@@ -75,7 +93,14 @@ impl Boiler {
             BoilerEfficiency::FollowingReturn {
                 combustion,
                 field_factor,
-            } => field_factor * combustion.gross_efficiency(return_c + FLUE_APPROACH_K),
+            } => {
+                let kept = if fault::on(Fault::IdealBoiler) {
+                    1.0
+                } else {
+                    field_factor
+                };
+                kept * combustion.gross_efficiency(return_c + FLUE_APPROACH_K)
+            }
         }
     }
 

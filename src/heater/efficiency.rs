@@ -1,5 +1,6 @@
 //! Efficiency of fuel use, which means nothing before it is said on which calorific value.
 
+use crate::fault::{self, Fault};
 use schemars::{Schema, json_schema};
 use toml::Value;
 
@@ -24,7 +25,12 @@ impl GrossEfficiency {
 
     /// From a fraction on net calorific value of natural gas.
     pub fn from_net(fraction: f64) -> Option<Self> {
-        Self::new(fraction * NET_PER_GROSS_METHANE)
+        let net_per_gross = if fault::on(Fault::NetForGross) {
+            1.0
+        } else {
+            NET_PER_GROSS_METHANE
+        };
+        Self::new(fraction * net_per_gross)
     }
 
     /// The fraction.

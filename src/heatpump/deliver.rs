@@ -7,6 +7,7 @@ use super::duty::{ColdSide, Delivered, Duty, Flags};
 use super::heat_pump::HeatPump;
 use super::part_load::{running_rise_k, start_up_loss_kw, starts_per_hour};
 use super::steady::{Held, Secant, Steady, Wanted};
+use crate::fault::{self, Fault};
 
 /// Change of the running flow temperature below which its substitution ends, K, and the most substitutions.
 const RISE_TOLERANCE_K: f64 = 1e-5;
@@ -133,7 +134,12 @@ impl HeatPump {
         } else {
             (0.0, if duty.at_full_output { 1.0 } else { 0.0 })
         };
-        let compressor = plain - tested_side + start_up;
+        let held_side = if fault::on(Fault::PumpTwice) {
+            0.0
+        } else {
+            tested_side
+        };
+        let compressor = plain - held_side + start_up;
         let source_side = tested_side * self.source_side_factor;
         let laboratory = compressor + source_side + defrost;
         let size = self.scale;

@@ -1,5 +1,6 @@
 //! The heat pump that the hours use: fitted machine, map, limits, frost, idle powers and the allowance from bench to home.
 
+use crate::fault::{self, Fault};
 use std::sync::Arc;
 
 use super::correction::FittedMachine;
@@ -82,7 +83,11 @@ impl HeatPump {
         Self {
             core: Arc::new(core),
             scale: 1.0,
-            field_factor: USUAL_FIELD_FACTOR,
+            field_factor: if fault::on(Fault::LaboratoryMachine) {
+                1.0
+            } else {
+                USUAL_FIELD_FACTOR
+            },
             source_side_factor: sheet
                 .source_power_at_home_kw
                 .map_or(1.0, |home| (home / tested_kw).max(1.0)),
@@ -209,7 +214,10 @@ impl HeatPump {
     pub fn cautions(&self) -> Vec<Finding> {
         let refrigerant = self.refrigerant();
         let facts = refrigerant.facts();
-        let supply = match self.greatest_current_a() {
+        let known_a = self
+            .greatest_current_a()
+            .filter(|_| !fault::on(Fault::MeanForSupply));
+        let supply = match known_a {
             Some(current_a) => format!("it draws up to {current_a:.0} A"),
             None => "its greatest current is not on the sheet".to_owned(),
         };

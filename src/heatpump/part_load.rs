@@ -1,5 +1,7 @@
 //! Running below the least output: on and off.
 
+use crate::fault::{self, Fault};
+
 /// Most starts an hour that a controller allows, once at half load; common practice, no source.
 const MOST_STARTS_PER_HOUR: f64 = 3.0;
 /// Widest spread of flow and return while running, K: the pump speeds up, or the machine's own protection acts, beyond it. The
@@ -12,6 +14,9 @@ const WIDEST_SPREAD_K: f64 = 10.0;
 /// the flow is hotter by the running spread × (1 − share): 0.31 at a running spread of 5 K is 3.45 K (methods §16). `share` is the
 /// share of the time that it runs, 0..1.
 pub fn running_rise_k(spread_k: f64, share: f64) -> f64 {
+    if fault::on(Fault::CyclingAtMeanFlow) {
+        return 0.0;
+    }
     running_spread_k(spread_k, share) * (1.0 - share.clamp(0.0, 1.0))
 }
 

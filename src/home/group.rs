@@ -1,5 +1,7 @@
 //! One kind of emitter at its own design temperatures: heat against water temperature.
 
+use crate::fault::{self, Fault};
+
 /// What carries the heat into the rooms, with the exponent of its output.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub enum EmitterKind {
@@ -62,6 +64,9 @@ impl Group {
     }
 
     pub(super) fn excess_k(&self, room_c: f64) -> f64 {
+        if fault::on(Fault::FlowForMean) {
+            return self.flow_c - room_c;
+        }
         (self.flow_c + self.return_c) / 2.0 - room_c
     }
 

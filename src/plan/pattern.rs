@@ -1,7 +1,8 @@
 //! A plan that follows a running pattern.
 
 use crate::calendar::CivilHour;
-use crate::home::{Pattern, WarmUp};
+use crate::fault::{self, Fault};
+use crate::home::{FROST_C, Pattern, WarmUp};
 use crate::year::{Plan, Recovery, Signal};
 
 /// A warm-up is looked ahead for at most this long, h. A choice of ours: a heavy home on its coldest morning.
@@ -31,7 +32,13 @@ pub fn following(
     electricity: Signal,
     fuel: Option<Signal>,
 ) -> Plan {
-    let set_point_c: Vec<f64> = civil.iter().map(|hour| pattern.set_point_c(hour)).collect();
+    let set_point_c: Vec<f64> = civil
+        .iter()
+        .map(|hour| match hour.hour {
+            0..7 | 9..16 | 23.. if fault::on(Fault::RunLikeBoiler) => FROST_C,
+            _ => pattern.set_point_c(hour),
+        })
+        .collect();
     let backup_below_c = (0..set_point_c.len())
         .map(|hour| {
             let earliest = hour.saturating_sub(BACKUP_WAITS_H);

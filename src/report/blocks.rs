@@ -158,7 +158,9 @@ impl Reader {
 
 /// `text` with no-break spaces between a number and its unit, and true minus signs.
 fn bound_units(text: &str) -> String {
-    const UNITS: &[&str] = &["%", "°C", "K", "kW", "kWh", "W", "W/K", "kg", "m²", "h"];
+    const UNITS: &[&str] = &[
+        "%", "°C", "K", "kW", "kWh", "W", "W/K", "kg", "m²", "h", "p/kWh", "ct/kWh", "c/kWh",
+    ];
     let mut out = String::with_capacity(text.len());
     for word in text.split_inclusive(' ') {
         let unit = word.trim_end_matches([' ', '.', ',', ';', ':', ')']);

@@ -12,7 +12,9 @@ mod ground;
 mod home;
 mod hours;
 mod ledger;
+mod narrow;
 mod odds;
+mod odds_pictures;
 mod page;
 #[cfg(feature = "pdf")]
 mod pdf;
@@ -29,6 +31,7 @@ pub use ground::ground_text;
 pub use home::{home_text, patterns_text};
 pub use ledger::{ledger_csv, ledger_legend};
 pub use odds::odds_text;
+pub use odds_pictures::{odds_pictures, samples_csv};
 pub use page::report_html;
 #[cfg(feature = "pdf")]
 pub use pdf::report_pdf;

@@ -7,6 +7,7 @@ use minijinja::{Environment, context};
 
 use super::ReportError;
 use super::blocks::{Block, Line, blocks, plain};
+use super::narrow;
 use super::pictures::{Drawn, Material};
 use super::sentences::{FIRST_PAGE, Section, sections};
 use crate::chart;
@@ -107,12 +108,22 @@ fn write_section(
             Block::Picture { name, caption } => {
                 if let Some(drawn) = pictures.get(name.as_str()) {
                     let svg = drawn.picture.svg_without_fonts()?;
+                    let class = if drawn.narrow.is_empty() {
+                        ""
+                    } else {
+                        " class=\"has-narrow\""
+                    };
                     let _ = write!(
                         out,
-                        "<figure id=\"picture-{}\">\n<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{}\">\n{svg}\n</div>\n\
+                        "<figure id=\"picture-{}\"{class}>\n<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{}\">\n{svg}\n</div>\n{}\
                          <figcaption>{}</figcaption>\n</figure>\n",
                         escaped(&name),
                         escaped(&format!("Picture: {} ({name})", drawn.picture.title)),
+                        if drawn.narrow.is_empty() {
+                            String::new()
+                        } else {
+                            narrow::bars(&drawn.narrow)
+                        },
                         text(&caption)
                     );
                 }
@@ -149,7 +160,17 @@ fn write_table(out: &mut String, name: &str, head: &[Line], rows: &[Vec<Line>], 
             if column == 0 {
                 let _ = write!(out, "<th scope=\"row\">{}</th>", text(cell));
             } else {
-                let _ = write!(out, "<td{}>{}</td>", class(column), text(cell));
+                // On a phone each figure stands below the other with the name of its column.
+                let name = head
+                    .get(column)
+                    .map_or_else(String::new, |cell| plain(cell));
+                let _ = write!(
+                    out,
+                    "<td{} data-label=\"{}\"><span>{}</span></td>",
+                    class(column),
+                    escaped(&name),
+                    text(cell)
+                );
             }
         }
         let _ = writeln!(out, "</tr>");
@@ -194,7 +215,7 @@ fn breakable(text: &str) -> String {
     words.collect::<Vec<_>>().join(" ")
 }
 
-fn escaped(text: &str) -> String {
+pub(super) fn escaped(text: &str) -> String {
     let mut out = String::with_capacity(text.len());
     for c in text.chars() {
         match c {

@@ -33,11 +33,13 @@ sections! {
     "answer", "";
     "change", "What would change it";
     "next", "What to find out next";
+    "odds", "How sure it is";
     "home", "The home, and what was assumed";
     "weather", "The weather, and how good it is";
     "systems", "Each system";
     "air-ground", "Air against ground";
     "money", "Money";
+    "years", "Over the years";
     "carbon", "Carbon";
     "cold", "Cold weather, comfort and hot water";
     "hour", "The coldest hour, worked through";
@@ -167,12 +169,13 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
                 return Ok("–".to_owned());
             }
             if kind == "text" {
-                return Ok(value.to_string());
+                return Ok(marks.localized(&value.to_string()));
             }
             let number = f64::try_from(value)?;
             match kind {
                 "money" => Ok(money(number, 0)),
                 "money2" => Ok(money(number, 2)),
+                "money3" => Ok(money(number, 3)),
                 "int" => Ok(marks.number(number, 0)),
                 "dec1" => Ok(marks.number(number, 1)),
                 "dec2" => Ok(marks.number(number, 2)),
@@ -185,12 +188,16 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
             }
         },
     );
+    environment.add_filter("localized", move |text: &str| marks.localized(text));
     environment.add_filter("short", |text: &str| short(text));
     environment.add_filter("words", |text: &str| text.replace(['.', '_'], " "));
-    environment.add_filter("either", |parts: Vec<String>| match parts.split_last() {
-        None => String::new(),
-        Some((only, [])) => only.clone(),
-        Some((last, rest)) => format!("{}, or {last}", rest.join(", ")),
+    environment.add_filter("either", move |parts: Vec<String>| {
+        let parts: Vec<_> = parts.iter().map(|part| marks.localized(part)).collect();
+        match parts.split_last() {
+            None => String::new(),
+            Some((only, [])) => only.clone(),
+            Some((last, rest)) => format!("{}, or {last}", rest.join(", ")),
+        }
     });
     environment.add_filter(
         "any_has",

@@ -4,22 +4,25 @@ use std::fmt::Write as _;
 
 use super::home::home_in_words;
 use super::table::plain_table_within;
+use crate::answer::odds::OddsSummary;
 use crate::answer::{Estimate, LeverAnswer, SystemAnswer};
+use crate::locale::Marks;
 
 /// Width of everything that is printed, characters.
 pub(super) const WIDTH: u16 = 80;
 /// Systems beside each other, today's among them.
 const SYSTEMS_ABREAST: usize = 4;
 
-/// The estimate as text for a terminal of 80 columns or more; `sources` says where each assumption is from.
-pub fn estimate_text(estimate: &Estimate, sources: bool) -> String {
-    let mut text = heading(estimate);
+/// The estimate as text for a terminal of 80 columns or more, with the decimal mark of the place; `sources` says where each
+/// assumption is from.
+pub fn estimate_text(estimate: &Estimate, marks: &Marks, sources: bool) -> String {
+    let mut text = heading(estimate, marks);
     let (today, choices): (Vec<_>, Vec<_>) =
         estimate.systems.iter().partition(|system| system.today);
     for group in choices.chunks(SYSTEMS_ABREAST - 1) {
         let systems: Vec<_> = today.iter().chain(group).copied().collect();
         // Writing to a String cannot fail.
-        let _ = writeln!(text, "{}\n", table(&systems, &estimate.currency));
+        let _ = writeln!(text, "{}\n", table(&systems, &estimate.currency, marks));
     }
     for choice in &choices {
         let levers = estimate
@@ -29,18 +32,52 @@ pub fn estimate_text(estimate: &Estimate, sources: bool) -> String {
         let _ = writeln!(
             text,
             "{}",
-            wrapped(&in_words(choice, levers, &estimate.currency), "", "  ")
+            wrapped(
+                &in_words(choice, levers, &estimate.currency, marks),
+                "",
+                "  "
+            )
         );
         if let Some(shifting) = &choice.shifting {
-            let _ = writeln!(text, "{}", wrapped(&shifting.sentence, "  ", "  "));
+            let _ = writeln!(
+                text,
+                "{}",
+                wrapped(&marks.localized(&shifting.sentence), "  ", "  ")
+            );
         }
     }
     for line in home_in_words(estimate) {
-        let _ = writeln!(text, "{}", wrapped(&line, "", "  "));
+        let _ = writeln!(text, "{}", wrapped(&marks.localized(&line), "", "  "));
     }
-    let _ = writeln!(text, "\n{}", assumptions(estimate, sources));
+    if let Some(odds) = &estimate.odds {
+        let _ = writeln!(text, "\n{}", marks.localized(&odds_in_brief(odds)));
+    }
+    let _ = writeln!(text, "\n{}", assumptions(estimate, marks, sources));
     let _ = write!(text, "\n{}", wrapped(LIMITS, "", ""));
     text
+}
+
+/// How sure it is, a paragraph a choice.
+fn odds_in_brief(odds: &OddsSummary) -> String {
+    let heading = format!(
+        "How sure: every unknown within its range, {} samples (winterledger odds draws more)",
+        odds.samples
+    );
+    let mut lines = vec![wrapped(&heading, "", "  ")];
+    for choice in &odds.choices {
+        let error = choice.chance_error.map_or_else(String::new, |error| {
+            // A whole percent: the error of an error is large.
+            format!(" ± {:.0}", (error * 100.0).max(1.0))
+        });
+        let said = format!(
+            "{} Chance {:.0}{error} %. {}",
+            choice.sentence,
+            choice.chance_cheaper * 100.0,
+            choice.depends_on.as_deref().unwrap_or_default()
+        );
+        lines.push(wrapped(said.trim_end(), "", "  "));
+    }
+    lines.join("\n")
 }
 
 /// What the figures are and are not.
@@ -48,7 +85,7 @@ const LIMITS: &str = "Estimates for a decision, not a design. Before anything is
 calculation by a competent person; the electricity supply checked with the network operator and an electrician; \
 refrigerant, gas and ground works by licensed people under local rules.";
 
-fn heading(estimate: &Estimate) -> String {
+fn heading(estimate: &Estimate, marks: &Marks) -> String {
     let home = &estimate.home;
     let weather = &estimate.weather;
     let label = home.label.as_deref().unwrap_or("The home");
@@ -60,17 +97,21 @@ fn heading(estimate: &Estimate) -> String {
         0 | 1 => String::new(),
         years => format!(", mean of {years} years"),
     };
+    let loss = format!(
+        "{:.0} W/K, {:.1} kW at {:.1} °C outdoors without gains",
+        home.heat_loss_w_per_k, home.design_heat_load_kw, home.design_outdoor_c,
+    );
+    let hours = format!(
+        "{} h, mean {:.1} °C, lowest {:.1} °C{repaired}",
+        weather.hours, weather.mean_c, weather.min_c,
+    );
     format!(
         "{label}: heating and hot water in a year{years}\n\
-         Home     {:.0} W/K, {:.1} kW at {:.1} °C outdoors without gains\n\
-         Weather  {}: {} h, mean {:.1} °C, lowest {:.1} °C{repaired}\n\n",
-        home.heat_loss_w_per_k,
-        home.design_heat_load_kw,
-        home.design_outdoor_c,
+         Home     {}\n\
+         Weather  {}: {}\n\n",
+        marks.localized(&loss),
         weather.file,
-        weather.hours,
-        weather.mean_c,
-        weather.min_c,
+        marks.localized(&hours),
     )
 }
 
@@ -175,7 +216,7 @@ const LINES: &[Line] = &[
     }),
 ];
 
-fn table(systems: &[&SystemAnswer], currency: &str) -> String {
+fn table(systems: &[&SystemAnswer], currency: &str, marks: &Marks) -> String {
     let names = systems.iter().map(|system| {
         if system.today {
             format!("{} (today)", system.label)
@@ -188,7 +229,7 @@ fn table(systems: &[&SystemAnswer], currency: &str) -> String {
         let known = figures.iter().any(Option::is_some);
         let cells = figures
             .into_iter()
-            .map(|figure| figure.unwrap_or_else(|| "–".to_owned()));
+            .map(|figure| figure.map_or_else(|| "–".to_owned(), |f| marks.localized(&f)));
         known.then(|| std::iter::once((*name).to_owned()).chain(cells).collect())
     });
     plain_table_within(
@@ -199,7 +240,12 @@ fn table(systems: &[&SystemAnswer], currency: &str) -> String {
 }
 
 /// A choice's answer as an adviser could say it.
-fn in_words(choice: &SystemAnswer, levers: &[LeverAnswer], currency: &str) -> String {
+fn in_words(
+    choice: &SystemAnswer,
+    levers: &[LeverAnswer],
+    currency: &str,
+    marks: &Marks,
+) -> String {
     let saving = choice.saving.unwrap_or(0.0);
     /// Below this share of today's cost a difference is told as none. A choice of ours.
     const ABOUT_THE_SAME: f64 = 0.02;
@@ -212,7 +258,7 @@ fn in_words(choice: &SystemAnswer, levers: &[LeverAnswer], currency: &str) -> St
     };
     let conditions: Vec<_> = levers
         .iter()
-        .flat_map(|lever| lever.conditions.iter().cloned())
+        .flat_map(|lever| lever.conditions.iter().map(|said| marks.localized(said)))
         .collect();
     let break_even = match conditions.split_last() {
         None => "No price or flow temperature looked at makes it break even.".to_owned(),
@@ -222,14 +268,14 @@ fn in_words(choice: &SystemAnswer, levers: &[LeverAnswer], currency: &str) -> St
     format!("{}: {difference}. {break_even}", choice.label)
 }
 
-fn assumptions(estimate: &Estimate, sources: bool) -> String {
+fn assumptions(estimate: &Estimate, marks: &Marks, sources: bool) -> String {
     if sources {
         let lines: Vec<_> = estimate
             .assumptions
             .iter()
             .map(|a| {
                 wrapped(
-                    &format!("{}: {} ({})", a.name, a.value, a.from),
+                    &format!("{}: {} ({})", a.name, marks.localized(&a.value), a.from),
                     "  ",
                     "    ",
                 )
@@ -240,7 +286,7 @@ fn assumptions(estimate: &Estimate, sources: bool) -> String {
     let parts: Vec<_> = estimate
         .assumptions
         .iter()
-        .map(|a| format!("{} {}", a.name, a.value))
+        .map(|a| format!("{} {}", a.name, marks.localized(&a.value)))
         .collect();
     let text = format!(
         "Assumed (sources with --assumptions): {}.",

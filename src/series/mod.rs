@@ -4,7 +4,6 @@ mod layout;
 mod read;
 mod time;
 
-use std::fs;
 use std::path::Path;
 
 pub use layout::{Layout, Stamp, WithinHour};
@@ -13,6 +12,7 @@ pub use read::{read_csv, read_text};
 use chrono::{DateTime, Datelike, TimeZone, Timelike, Utc};
 
 use crate::calendar::CivilHour;
+use crate::limits::{LARGEST_DATA, read_at_most};
 use crate::problem::{Place, Problem, Problems};
 
 /// Consecutive hourly values from a UTC hour on.
@@ -109,22 +109,14 @@ fn instant(hour: i64) -> DateTime<Utc> {
     DateTime::from_timestamp(hour * 3600, 0).unwrap_or_default()
 }
 
-/// Largest file that is read, bytes: five-minute values of many years fit.
-const LARGEST: u64 = 256 * 1024 * 1024;
-
 /// The text of a file.
 fn open(path: &Path) -> Result<String, Problems> {
     let refuse = |found: String, allowed: &str| {
         let place = Place::file(path.display().to_string());
         Problems::from(Problem::new(place, found, allowed, "check the path"))
     };
-    let cannot =
-        |error: std::io::Error| refuse(format!("cannot be read: {error}"), "a readable file");
-    let length = fs::metadata(path).map_err(cannot)?.len();
-    if length > LARGEST {
-        return Err(refuse(format!("{length} bytes"), "at most 256 MiB"));
-    }
-    let bytes = fs::read(path).map_err(cannot)?;
+    let bytes =
+        read_at_most(path, LARGEST_DATA).map_err(|beyond| refuse(beyond.found, &beyond.allowed))?;
     let text =
         String::from_utf8(bytes).map_err(|_| refuse("not UTF-8".to_owned(), "text in UTF-8"))?;
     Ok(match text.strip_prefix('\u{feff}') {

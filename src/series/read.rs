@@ -10,6 +10,7 @@ use chrono::{DateTime, Duration, Utc};
 use super::layout::{Layout, Stamp, WithinHour};
 use super::time::{Wrong, instant};
 use super::{Series, say};
+use crate::limits::check_lines;
 use crate::problem::{Place, Problem, Problems};
 
 /// Header of the column of times.
@@ -37,6 +38,10 @@ pub fn read_csv(path: &Path, layout: &Layout) -> Result<Series, Problems> {
 /// As [`read_csv`].
 pub fn read_text(file: &str, text: &str, layout: &Layout) -> Result<Series, Problems> {
     let place = Place::file(file);
+    check_lines(text).map_err(|beyond| {
+        let place = place.clone().at_line(beyond.line.unwrap_or(0));
+        Problem::new(place, beyond.found, beyond.allowed, "")
+    })?;
     let mut reader = csv::ReaderBuilder::new()
         .comment(Some(b'#'))
         .trim(csv::Trim::All)

@@ -1,13 +1,15 @@
 //! How each lever acts on the contenders of a case.
 
+use crate::fault::{self, Fault};
 use std::sync::Arc;
 
 use super::case::{Account, Contender};
 use super::lever::{Again, Lever};
+use crate::home::Emitters;
 use crate::problem::{Place, Problem, Problems};
 use crate::source::Source;
 use crate::units::Fuel;
-use crate::year::{Plan, Signal};
+use crate::year::{Heating, Plan, Signal};
 
 impl Lever {
     /// Acts on contenders that stand as the brief put them. What belongs to the home or the supply moves for every system, what
@@ -22,8 +24,8 @@ impl Lever {
         choice: usize,
         hours: usize,
     ) -> Result<(), Problems> {
-        // Bills and carbon draw nothing from the ground.
-        if self.again() == Again::Everyone {
+        // Bills, carbon and today's boiler draw nothing from the ground.
+        if self.again() == Again::Everyone && self != Self::BoilerEfficiency {
             contenders.iter_mut().for_each(Contender::moved);
         }
         match self {
@@ -55,6 +57,24 @@ impl Lever {
                 for contender in contenders {
                     let fabric = &mut contender.system.home.fabric;
                     *fabric = fabric.with_heat_loss(fabric.heat_loss_w_per_k() * value);
+                    if fault::on(Fault::EmittersResized) {
+                        let held = contender.system.home.emitters;
+                        let load_kw = held.design_load_kw() * value;
+                        contender.system.home.emitters = Emitters::of_groups(
+                            held.groups(),
+                            load_kw,
+                            contender.indoor_c,
+                            held.greatest_flow_c(),
+                        )
+                        .unwrap_or(held);
+                    }
+                }
+            }
+            Self::BoilerEfficiency => {
+                for contender in contenders.iter_mut().filter(|contender| contender.today) {
+                    if let Heating::Boiler { boiler, .. } = &mut contender.system.heating {
+                        *boiler = boiler.with_efficiency_times(value);
+                    }
                 }
             }
             Self::HotWater => {

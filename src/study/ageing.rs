@@ -1,6 +1,7 @@
 //! The years of a buried loop: what earlier ones leave behind, and each year of its life.
 
 use super::case::{Case, Contender};
+use crate::fault::{self, Fault};
 use crate::source::{BuriedLoop, Memory, Source};
 use crate::year::{MachineSystem, Row, Sink, State, run};
 
@@ -125,7 +126,11 @@ impl Case {
         contender.remembering()?;
         let mut state = State::at_rest(&contender.system, contender.indoor_c);
         let mut drawn = Drawn::default();
-        let years = year.saturating_sub(1);
+        let years = if fault::on(Fault::FirstYearLoop) {
+            0
+        } else {
+            year.saturating_sub(1)
+        };
         for i in 0..years {
             drawn = Drawn::default();
             let (_, hours) = self.weather_year(i)?;

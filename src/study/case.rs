@@ -1,5 +1,6 @@
 //! A case: one home's weather, and the systems that could heat it.
 
+use std::ops::Range;
 use std::sync::Arc;
 
 use chrono_tz::Tz;
@@ -241,15 +242,41 @@ impl Case {
         contender: &Contender,
         ledger: Option<&mut Ledger>,
     ) -> Result<Outcome, Problems> {
+        self.run_over(contender, 0..self.site.years.len(), ledger)
+    }
+
+    /// Runs one system through one year of the weather alone, by its place: of its costs only that of this year counts. A few hours of
+    /// a UTC year that fall into the civil year beside it are left out, for every system alike.
+    ///
+    /// # Errors
+    /// When a bill cannot be made.
+    pub(super) fn run_year(
+        &self,
+        contender: &Contender,
+        place: usize,
+    ) -> Result<Outcome, Problems> {
+        self.run_over(contender, place..place + 1, None)
+    }
+
+    fn run_over(
+        &self,
+        contender: &Contender,
+        years: Range<usize>,
+        ledger: Option<&mut Ledger>,
+    ) -> Result<Outcome, Problems> {
+        let run = |ground, ledger| {
+            let ran = self.run_through(contender, ground, years.clone(), ledger);
+            ran.map(|(outcome, _)| outcome)
+        };
         let Some(aged) = contender.aged else {
-            return self.run_from(contender, Memory::default(), ledger);
+            return run(Memory::default(), ledger);
         };
         if !aged.moved {
-            return self.run_from(contender, aged.memory, ledger);
+            return run(aged.memory, ledger);
         }
-        let trial = self.run_from(contender, aged.memory, None)?;
+        let trial = run(aged.memory, None)?;
         let drawn_kwh = trial.mean(|year| year.sums.extracted_kwh - year.sums.returned_kwh);
-        self.run_from(contender, aged.for_draw(drawn_kwh), ledger)
+        run(aged.for_draw(drawn_kwh), ledger)
     }
 
     /// Runs one system through every year from what its ground remembers.
@@ -262,7 +289,8 @@ impl Case {
         ground: Memory,
         ledger: Option<&mut Ledger>,
     ) -> Result<Outcome, Problems> {
-        Ok(self.run_through(contender, ground, ledger)?.0)
+        let years = 0..self.site.years.len();
+        Ok(self.run_through(contender, ground, years, ledger)?.0)
     }
 
     /// Cost of each year of a system's life from fresh ground, the weather's years in their order again and again: a buried loop costs
@@ -277,7 +305,8 @@ impl Case {
             if costs.len() >= years {
                 break;
             }
-            let (outcome, after) = self.run_through(contender, ground, None)?;
+            let all = 0..self.site.years.len();
+            let (outcome, after) = self.run_through(contender, ground, all, None)?;
             costs.extend(outcome.costs.by_year);
             if contender.remembering().is_none() {
                 costs = costs.iter().copied().cycle().take(years).collect();
@@ -288,11 +317,12 @@ impl Case {
         Ok(costs)
     }
 
-    /// Runs one system through every year; gives what the ground remembers at the end beside the outcome.
+    /// Runs one system through some of the years; gives what the ground remembers at the end beside the outcome.
     fn run_through(
         &self,
         contender: &Contender,
         ground: Memory,
+        places: Range<usize>,
         mut ledger: Option<&mut Ledger>,
     ) -> Result<(Outcome, Memory), Problems> {
         let site = &*self.site;
@@ -307,8 +337,8 @@ impl Case {
             &contender.electricity.meter,
             contender.fuel.as_ref().map(|fuel| &*fuel.meter),
         );
-        let mut years = Vec::with_capacity(site.years.len());
-        for (year, hours) in &site.years {
+        let mut years = Vec::with_capacity(places.len());
+        for (year, hours) in site.years.get(places).unwrap_or_default() {
             let mut totals = Totals::new(&site.month0);
             let mut fuel_carbon = CarbonOfFuel::new(&site.month0, plan.fuel.as_ref());
             let mut meters = Both(&mut metered, &mut fuel_carbon);

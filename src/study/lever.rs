@@ -4,6 +4,7 @@ use super::case::Case;
 use crate::bounds::{self, Bound};
 use crate::problem::{Place, Problem, Problems};
 use crate::source::{Memory, Source};
+use crate::year::Heating;
 
 /// One quantity that can be moved, everything else staying as it is.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -34,6 +35,8 @@ pub enum Lever {
     Grant,
     /// Carbon of a kilowatt-hour of electricity, as a multiple of today's.
     ElectricityCarbon,
+    /// Efficiency of today's boiler, as a multiple of what it is taken to be.
+    BoilerEfficiency,
 }
 
 /// What has to be done again when a lever is moved.
@@ -63,6 +66,7 @@ impl Lever {
         Self::Capital,
         Self::Grant,
         Self::ElectricityCarbon,
+        Self::BoilerEfficiency,
     ];
 
     /// Its name.
@@ -81,6 +85,7 @@ impl Lever {
             Self::Capital => "capital",
             Self::Grant => "grant",
             Self::ElectricityCarbon => "carbon of electricity",
+            Self::BoilerEfficiency => "efficiency of today's boiler",
         }
     }
 
@@ -104,6 +109,11 @@ impl Lever {
     /// Whether it is an amount of money.
     pub fn is_money(self) -> bool {
         matches!(self, Self::Capital | Self::Grant)
+    }
+
+    /// Whether it belongs to the home or the supply, so that it moves for every system alike.
+    pub(super) fn is_shared(self) -> bool {
+        self.again() != Again::Choice && !self.is_money()
     }
 
     /// Its place in the order in which levers act.
@@ -141,6 +151,7 @@ impl Lever {
             Self::Capital => (0.0, CAPITAL * now),
             Self::Grant => (0.0, contender.outlay.as_ref()?.capital().max(now)),
             Self::ElectricityCarbon => (0.0, 3.0),
+            Self::BoilerEfficiency => (0.8, 1.15),
         };
         (low < high).then_some(Bound {
             label: self.name(),
@@ -169,6 +180,7 @@ impl Lever {
             Self::RatedOutput => named(bounds::OUTPUT_KW),
             Self::FieldFactor => named(bounds::FIELD_FACTOR),
             Self::HeatLoss | Self::LoopResistance => from_to(0.01, 100.0),
+            Self::BoilerEfficiency => from_to(0.5, 1.5),
             Self::LoopLength => from_to(1.0, 10_000.0),
             Self::ElectricityRate | Self::FuelRate | Self::HotWater | Self::ElectricityCarbon => {
                 from_to(0.0, 100.0)
@@ -257,6 +269,11 @@ impl Lever {
                 .any(|contender| contender.fuel.is_some())
                 .then_some(1.0),
             (Self::ElectricityRate | Self::HeatLoss | Self::ElectricityCarbon, _) => Some(1.0),
+            (Self::BoilerEfficiency, _) => case
+                .contenders
+                .first()
+                .filter(|today| matches!(today.system.heating, Heating::Boiler { .. }))
+                .map(|_| 1.0),
             (Self::HotWater, _) => contender.system.home.hot_water.as_ref().map(|_| 1.0),
             (Self::FlowTemperature, _) => Some(contender.system.home.emitters.design_flow_c()),
             (Self::Indoor, _) => Some(contender.indoor_c),
@@ -304,7 +321,9 @@ impl Lever {
             | Self::FieldFactor
             | Self::LoopResistance
             | Self::LoopLength => Again::Choice,
-            Self::HeatLoss | Self::Indoor | Self::HotWater => Again::Everyone,
+            Self::HeatLoss | Self::Indoor | Self::HotWater | Self::BoilerEfficiency => {
+                Again::Everyone
+            }
         }
     }
 }

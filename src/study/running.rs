@@ -2,6 +2,7 @@
 
 use super::case::{Case, Contender};
 use super::outcome::Outcome;
+use crate::fault::{self, Fault};
 use crate::home::Pattern;
 use crate::plan::following;
 use crate::problem::{Place, Problem, Problems};
@@ -82,6 +83,9 @@ pub fn scale_to_fuel(case: &mut Case, fuel_kwh: f64) -> Result<f64, Problems> {
             for contender in &mut case.contenders {
                 let fabric = &mut contender.system.home.fabric;
                 *fabric = fabric.with_heat_loss(fabric.heat_loss_w_per_k() * middle);
+                if fault::on(Fault::BillsForSizing) {
+                    contender.design_load_kw *= middle;
+                }
                 contender.moved();
             }
             return Ok(middle);

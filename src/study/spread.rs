@@ -48,6 +48,7 @@ pub(super) fn spread_of(lever: Lever, case: &Case, choice: usize) -> Option<Spre
             1.11,
             "quartiles 2.20 and 2.70 about 2.44 of the coldest-day COP in a UK trial of monitored homes (secondary source)",
         ),
+        Lever::BoilerEfficiency => times(0.94, 1.05, COMMON),
         Lever::LoopResistance => times(0.75, 1.4, COMMON),
         Lever::Capital => times(0.85, 1.2, COMMON),
         Lever::ElectricityCarbon => times(0.7, 1.2, COMMON),

@@ -154,7 +154,7 @@ fn unpack(place: &Place, bytes: &[u8], options: &ReadOptions) -> Result<Vec<u8>,
             place.clone(),
             format!("the gzip data unpacks to more than {}", size(limit)),
             format!("at most {} unpacked", size(limit)),
-            "unpack the file yourself: a plain file has no such limit",
+            "unpack the file yourself: a plain file may have 512 MiB",
         ));
     }
     Ok(unpacked)

@@ -3,13 +3,15 @@
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use chrono::DateTime;
+use chrono::{DateTime, TimeDelta};
 
 use super::hours::{self, Hours};
 use super::words::count;
 use super::{Kind, ReadOptions, Weather, bytes, check, clock, layout, repair, rows, values};
 use crate::air;
 use crate::calendar::HourAxis;
+use crate::fault::{self, Fault};
+use crate::limits::{LARGEST_DATA, check_lines, read_at_most};
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
 
 const HOUR_S: i64 = 3600;
@@ -81,15 +83,9 @@ pub fn read_all(paths: &[PathBuf], options: &ReadOptions) -> Result<Vec<Weather>
 }
 
 fn contents(path: &Path) -> Result<Vec<u8>, Problems> {
-    std::fs::read(path).map_err(|error| {
+    read_at_most(path, LARGEST_DATA).map_err(|beyond| {
         let place = Place::file(path.display().to_string());
-        Problem::new(
-            place,
-            format!("cannot be read: {error}"),
-            "a file that can be read",
-            "",
-        )
-        .into()
+        Problem::new(place, beyond.found, beyond.allowed, "").into()
     })
 }
 
@@ -107,6 +103,15 @@ fn on_hours(
     } else {
         text.replace('\r', "\n").into()
     };
+    check_lines(&text).map_err(|beyond| {
+        let place = place.clone().at_line(beyond.line.unwrap_or(0));
+        Problem::new(
+            place,
+            beyond.found,
+            beyond.allowed,
+            "is this a file of hourly readings?",
+        )
+    })?;
     let layout = layout::layout(name, &text, options, findings)?;
     let mut rows = rows::rows(name, &text, &layout, options, findings)?;
     let values = values::values(&place, &mut rows, &layout, options, findings)?;
@@ -209,8 +214,9 @@ fn finish(
         )
         .into());
     };
+    let late_h = i64::from(fault::on(Fault::HourEndingStamps));
     let axis = HourAxis {
-        start,
+        start: start + TimeDelta::hours(late_h),
         hours: hours.outdoor_c.len(),
     };
     check::whole_years(&hours, axis.years(), &mut findings);

@@ -1,5 +1,6 @@
 //! One hour of the ledger. One declaration makes the fields, the column names with units, their meaning and the sums.
 
+use crate::fault::{self, Fault};
 use std::ops::{BitOr, BitOrAssign};
 
 /// What the columns of the ledger are called and mean.
@@ -263,7 +264,10 @@ impl Sums {
     }
 
     fn spf(&self, electric_heat_kwh: f64, electricity_kwh: f64) -> Option<f64> {
-        let machine_kwh = self.machine_space_kwh + self.machine_water_kwh;
+        let mut machine_kwh = self.machine_space_kwh + self.machine_water_kwh;
+        if fault::on(Fault::MixedBoundary) {
+            machine_kwh = self.machine_space_kwh + self.water_drawn_kwh;
+        }
         (machine_kwh > 0.0 && electricity_kwh > 0.0)
             .then(|| (machine_kwh + electric_heat_kwh) / electricity_kwh)
     }

@@ -1,5 +1,6 @@
 //! One hour: weather, demand, offer, machine, backup, row.
 
+use crate::fault::{self, Fault};
 use std::ops::Range;
 
 use super::Sink;
@@ -238,6 +239,9 @@ fn draw(home: &Home, clock: &CivilHour, shift_k: f64, state: &State, row: &mut R
             step.wanted_kwh = tapped.kwh;
         }
     }
+    if fault::on(Fault::HotWaterAllDay) {
+        step.wanted_kwh = water.mean_daily_kwh() / 24.0 + step.lost_kwh;
+    }
     row.water_drawn_kwh = step.drawn_kwh;
     row.water_missing_kwh = tapped.kwh - step.drawn_kwh;
     row.store_loss_kwh = step.lost_kwh;
@@ -289,11 +293,14 @@ pub(super) fn heat_pump_hour<P: Probe>(
     if rooms.wanted_kw > 0.0 {
         if hours_left > LEAST_RUN_H {
             // What hot water took from the hour is left to the fabric's storage: a compensated flow is not raised for it.
+            let shared_c = row
+                .water_flow_c
+                .filter(|_| fault::on(Fault::OneFlowForBothDuties));
             let ask = |heat_kw: f64| {
                 let warm = home.emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
                 Duty {
                     heat_kw: warm.heat_kw,
-                    flow_c: warm.water.flow_c + home.emitters.header_k(),
+                    flow_c: shared_c.unwrap_or(warm.water.flow_c + home.emitters.header_k()),
                     spread_k: warm.spread_k,
                     hours: hours_left,
                     at_full_output: false,

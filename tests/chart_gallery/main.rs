@@ -18,6 +18,8 @@ mod loads;
 #[cfg(test)]
 mod machines;
 #[cfg(test)]
+mod odds;
+#[cfg(test)]
 mod pressure_enthalpy;
 #[cfg(test)]
 mod random;

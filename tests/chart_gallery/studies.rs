@@ -2,9 +2,9 @@
 
 use crate::common::*;
 use winterledger::chart::{
-    BreakEven, BreakEvenLine, BrineLine, BrineYear, Contours, CumulativeSpend, MeterPoint,
-    SignaturePlot, Swing, Swings, SystemSpend, break_even, brine_year, calendar_months, contours,
-    cumulative_spend, signature_plot, swings,
+    BreakEven, BreakEvenLine, BrineLine, BrineYear, Contours, CumulativeSpend, EmitterStep,
+    EmitterStudy, MeterPoint, SignaturePlot, Swing, Swings, SystemSpend, break_even, brine_year,
+    calendar_months, contours, cumulative_spend, emitter_study, signature_plot, swings,
 };
 
 fn swing(label: &str, low_text: &str, high_text: &str, low: f64, high: f64) -> Swing {
@@ -343,4 +343,68 @@ fn signature_hostile() {
         "signature_nothing",
         &signature_plot(&data, &english()).expect("drawn"),
     );
+}
+
+fn emitters() -> EmitterStudy {
+    let step = |flow_c: f64, times_today: f64, saving: f64, spf_h4: f64| EmitterStep {
+        flow_c,
+        times_today,
+        saving: Some(saving),
+        spf_h4: Some(spf_h4),
+    };
+    EmitterStudy {
+        choice: "Air source, larger radiators".into(),
+        currency: "GBP".into(),
+        steps: vec![
+            step(35.0, 3.4, 214.0, 4.12),
+            step(40.0, 2.4, 158.0, 3.78),
+            step(45.0, 1.8, 96.0, 3.43),
+            step(50.0, 1.4, 31.0, 3.12),
+            step(55.0, 1.2, -48.0, 2.81),
+            EmitterStep {
+                flow_c: 60.0,
+                times_today: 1.0,
+                saving: None,
+                spf_h4: None,
+            },
+        ],
+        now_c: Some(45.0),
+        crossings_c: vec![52.0],
+    }
+}
+
+#[test]
+fn emitters_realistic() {
+    check(
+        "emitters_realistic",
+        &emitter_study(&emitters(), &english()).expect("drawn"),
+    );
+}
+
+#[test]
+fn emitters_hostile() {
+    let mut data = emitters();
+    data.choice = long_name();
+    data.currency = long_name();
+    data.now_c = Some(35.0);
+    data.crossings_c = vec![35.0, 35.1, 59.9, 60.0];
+    for step in &mut data.steps {
+        step.times_today = 1e6;
+        step.saving = step.saving.map(|_| -1e9);
+    }
+    check(
+        "emitters_hostile",
+        &emitter_study(&data, &english()).expect("drawn"),
+    );
+    data.steps.truncate(2);
+    data.crossings_c.clear();
+    data.now_c = None;
+    check(
+        "emitters_two_steps",
+        &emitter_study(&data, &english()).expect("drawn"),
+    );
+    for steps in [0, 1] {
+        data.steps.truncate(steps);
+        assert!(emitter_study(&data, &english()).is_err());
+    }
 }

@@ -4,6 +4,7 @@ use super::raw::RawTested;
 use super::{SourceKind, SpeedAt, TestedPoint, carnot, default_spread_k};
 use crate::bounds::{self, Bound};
 use crate::document::{Check, Leaf, Section};
+use crate::fault::{self, Fault};
 use crate::units::Power;
 
 /// Entering brine or ground water.
@@ -138,7 +139,9 @@ pub(super) fn read_point(
         cop: cop?,
         at,
         // Only an outdoor coil frosts.
-        defrost_included: defrost_included && kind == SourceKind::Air,
+        defrost_included: defrost_included
+            && kind == SourceKind::Air
+            && !fault::on(Fault::DefrostTwice),
     })
 }
 

@@ -56,7 +56,7 @@ const BEFORE_ITEM: f64 = 2.6;
 /// Widest line of running text, points: some 85 signs.
 const MEASURE: f64 = 410.0;
 /// Tallest picture of the first page and of the others, points.
-const TALLEST_FIRST: f64 = 235.0;
+const TALLEST_FIRST: f64 = 205.0;
 const TALLEST: f64 = 430.0;
 /// Widest share of the column that a picture takes.
 const WIDEST: f64 = 0.97;
@@ -194,11 +194,7 @@ impl<'a> Setter<'a> {
                 // A paragraph that is one strong name heads what follows.
                 let heads = line.iter().all(|span| span.strong);
                 self.structure.open(Kind::Paragraph);
-                let room = if style.size > BODY.size {
-                    self.width
-                } else {
-                    MEASURE
-                };
+                let room = if first_page { self.width } else { MEASURE };
                 self.text(line, style, 0.0, room);
                 self.structure.close();
                 if heads {
@@ -206,7 +202,10 @@ impl<'a> Setter<'a> {
                 }
             }
             Block::List { items, .. } if section == "answer" => self.key_figures(items),
-            Block::List { numbered, items } => self.list(*numbered, items),
+            Block::List { numbered, items } => {
+                let room = if first_page { self.width } else { MEASURE };
+                self.list(*numbered, items, room);
+            }
             Block::Table {
                 head,
                 rows,
@@ -288,7 +287,7 @@ impl<'a> Setter<'a> {
         });
     }
 
-    fn list(&mut self, numbered: bool, items: &[Text]) {
+    fn list(&mut self, numbered: bool, items: &[Text], room: f64) {
         self.structure.open(Kind::List { numbered });
         for (i, item) in items.iter().enumerate() {
             self.structure.open(Kind::Item);
@@ -306,7 +305,7 @@ impl<'a> Setter<'a> {
                 before: BEFORE_ITEM,
                 ..BODY
             };
-            self.text(item, style, INDENT, MEASURE);
+            self.text(item, style, INDENT, room);
             self.structure.close();
             self.structure.close();
             if let Some(row) = self.rows.get_mut(at) {

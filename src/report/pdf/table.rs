@@ -42,8 +42,11 @@ pub(super) fn table(setter: &mut Setter<'_>, table: &Table<'_>) {
     setter.structure.open(Kind::TableBody);
     let count = table.rows.len();
     for (i, cells) in table.rows.iter().enumerate() {
-        let sum = cells.first().is_some_and(|cell| plain(cell) == "Year");
-        let kind = if sum { RowKind::Sum } else { RowKind::Body };
+        let kind = if is_sum(cells) {
+            RowKind::Sum
+        } else {
+            RowKind::Body
+        };
         let mut row = row(setter, table, &columns, cells, kind);
         row.head = Some(Rc::clone(&head_again));
         // Neither the first nor the last row stands alone; a short table is not parted.
@@ -52,6 +55,11 @@ pub(super) fn table(setter: &mut Setter<'_>, table: &Table<'_>) {
     }
     setter.structure.close();
     setter.structure.close();
+}
+
+/// Whether a row is the sum of those above it.
+fn is_sum(cells: &[Text]) -> bool {
+    cells.first().is_some_and(|cell| plain(cell) == "Year")
 }
 
 #[derive(Clone, Copy, PartialEq)]
@@ -76,7 +84,12 @@ fn column_widths(table: &Table<'_>, room: f64) -> Vec<f64> {
     // Names of columns may take two lines, so that they do not crowd out what stands below.
     look(table.head, Weight::Bold, 1.8);
     for row in table.rows {
-        look(row, Weight::Regular, 1.0);
+        let weight = if is_sum(row) {
+            Weight::Bold
+        } else {
+            Weight::Regular
+        };
+        look(row, weight, 1.0);
     }
     let room = room - GAP * (count - 1) as f64;
     // No column may take more than its fair share for one endless word.

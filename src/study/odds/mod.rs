@@ -8,11 +8,13 @@ mod quantiles;
 mod range;
 mod sampler;
 mod shares;
+mod uncertain;
 mod worth;
 
 pub use hypercube::Hypercube;
 pub use quantiles::{Chance, Quantiles};
 pub use range::Range;
-pub use sampler::{Drawn, Sample, Sampler, Uncertain};
+pub use sampler::{Drawn, Sample, Sampler};
 pub use shares::{SpreadShare, shares};
+pub use uncertain::{Declared, Doubts, PRICE_CORRELATION, Uncertain};
 pub use worth::{chance_wrong, chance_wrong_knowing};

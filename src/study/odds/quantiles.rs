@@ -31,12 +31,43 @@ impl Quantiles {
     }
 }
 
+impl Quantiles {
+    /// Standard errors of the quantiles of equal blocks: each block is left out in turn (grouped jackknife, Efron 1982); nothing with
+    /// a single block.
+    pub fn errors(blocks: &[Vec<f64>]) -> Option<Self> {
+        let count = blocks.len() as f64;
+        let without = |left: usize| {
+            let kept = blocks
+                .iter()
+                .enumerate()
+                .filter(|(place, _)| *place != left);
+            Self::of(
+                &kept
+                    .flat_map(|(_, block)| block.iter().copied())
+                    .collect::<Vec<_>>(),
+            )
+        };
+        let each = (0..blocks.len()).map(without).collect::<Option<Vec<_>>>()?;
+        let error = |of: fn(&Self) -> f64| {
+            let mean = each.iter().map(of).sum::<f64>() / count;
+            let scatter: f64 = each.iter().map(|one| (of(one) - mean).powi(2)).sum();
+            (scatter * (count - 1.0) / count).sqrt()
+        };
+        (!each.is_empty()).then(|| Self {
+            p10: error(|one| one.p10),
+            p50: error(|one| one.p50),
+            p90: error(|one| one.p90),
+        })
+    }
+}
+
 /// A chance with its sampling error.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Chance {
     /// Share of the sample, 0 to 1.
     pub chance: f64,
-    /// Standard error from the scatter of the blocks; infinite with a single block.
+    /// Standard error from the scatter of the blocks; infinite with a single block. Where all samples or none agree it is 1 in
+    /// n + 2, the deviation that Laplace's rule of succession leaves.
     pub error: f64,
 }
 
@@ -50,7 +81,11 @@ impl Chance {
             let held = block.iter().filter(|value| holds(**value)).count();
             held as f64 / block.len() as f64
         };
-        let shares: Vec<f64> = blocks.map(share).collect();
+        let mut samples = 0;
+        let shares: Vec<f64> = blocks
+            .inspect(|block| samples += block.len())
+            .map(share)
+            .collect();
         let count = shares.len() as f64;
         if shares.is_empty() {
             return None;
@@ -63,7 +98,9 @@ impl Chance {
             / (count - 1.0);
         Some(Self {
             chance,
-            error: if shares.len() > 1 {
+            error: if shares.len() > 1 && (chance <= 0.0 || chance >= 1.0) {
+                1.0 / (samples as f64 + 2.0)
+            } else if shares.len() > 1 {
                 (variance / count).sqrt()
             } else {
                 f64::INFINITY

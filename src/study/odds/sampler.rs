@@ -3,30 +3,17 @@
 use rayon::prelude::*;
 
 use super::hypercube::Hypercube;
-use super::range::{Range, correlated};
+use super::range::correlated;
+use super::uncertain::{Doubts, Uncertain, possible};
 use crate::problem::{Place, Problem, Problems};
 use crate::study::case::Case;
-use crate::study::lever::{Again, Lever};
-
-/// A lever that is not known for certain.
-#[derive(Debug, Clone, PartialEq)]
-pub struct Uncertain {
-    /// The lever.
-    pub lever: Lever,
-    /// What it may be for each contender of the case; nothing where a contender has no such quantity. What belongs to the home or
-    /// the supply stands at the first choice alone and moves for all.
-    pub ranges: Vec<Option<Range>>,
-    /// Where the ranges are from.
-    pub from: String,
-}
+use crate::study::lever::Lever;
 
 /// Draws samples of a case.
 #[derive(Debug, Clone)]
 pub struct Sampler {
     case: Case,
-    uncertain: Vec<Uncertain>,
-    /// Correlation of the price of electricity with that of fuel.
-    correlation: f64,
+    doubts: Doubts,
     cube: Hypercube,
 }
 
@@ -48,7 +35,7 @@ pub struct Drawn {
 /// One sample.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Sample {
-    /// Share of one drawn for each lever, in their order.
+    /// Share of one drawn for each lever, in their order; with several years of weather one more, which chose the year.
     pub shares: Vec<f64>,
     /// Every contender, today's first.
     pub systems: Vec<Drawn>,
@@ -59,18 +46,12 @@ impl Sampler {
     ///
     /// # Errors
     /// No uncertain lever, a range that is none or that reaches what is impossible, a correlation outside −1 to 1.
-    pub fn new(
-        case: Case,
-        uncertain: Vec<Uncertain>,
-        correlation: f64,
-        seed: u64,
-        points: usize,
-    ) -> Result<Self, Problems> {
+    pub fn new(case: Case, doubts: Doubts, seed: u64, points: usize) -> Result<Self, Problems> {
         let mut problems = Problems::new();
         let refuse = |field: &str, found: String, allowed: &str, remedy: &str| {
             Problem::new(Place::field(field), found, allowed, remedy)
         };
-        if uncertain.is_empty() {
+        if doubts.levers.is_empty() {
             problems.push(refuse(
                 "odds",
                 "no uncertain lever".to_owned(),
@@ -78,6 +59,7 @@ impl Sampler {
                 "give a lever a range",
             ));
         }
+        let correlation = doubts.price_correlation;
         if correlation.is_nan() || correlation.abs() > 1.0 {
             problems.push(refuse(
                 "price_correlation",
@@ -86,32 +68,44 @@ impl Sampler {
                 "0 means that the two prices go their own ways",
             ));
         }
-        for one in &uncertain {
+        for one in &doubts.levers {
             for (contender, range) in one.ranges.iter().enumerate() {
                 let Some(range) = range else { continue };
-                problems.take(range.check(one.lever.name()));
-                // One in a thousand beyond is drawn now and then: it must be possible too.
-                for end in [range.at(0.0005), range.at(0.9995)].into_iter().flatten() {
-                    problems.take(one.lever.check(end, &case, contender));
-                }
+                problems.take(possible(one.lever, *range, &case, contender));
             }
         }
         let cube = Hypercube {
             seed,
             points,
-            quantities: uncertain.len(),
+            quantities: doubts.levers.len() + usize::from(case.site.years.len() > 1),
         };
-        problems.or(Self {
-            case,
-            uncertain,
-            correlation,
-            cube,
-        })
+        problems.or(Self { case, doubts, cube })
     }
 
     /// The levers that are moved.
     pub fn uncertain(&self) -> &[Uncertain] {
-        &self.uncertain
+        &self.doubts.levers
+    }
+
+    /// Whether the year of the weather is drawn too, as the last share of a sample.
+    pub fn draws_years(&self) -> bool {
+        self.cube.quantities > self.doubts.levers.len()
+    }
+
+    /// Correlation of the price of electricity with that of fuel.
+    pub fn price_correlation(&self) -> f64 {
+        self.doubts.price_correlation
+    }
+
+    /// Seed the samples follow from.
+    pub fn seed(&self) -> u64 {
+        self.cube.seed
+    }
+
+    /// The value a sample gave a lever for a choice; nothing where it was not moved.
+    pub fn value(&self, sample: &Sample, place: usize, choice: usize) -> Option<f64> {
+        let range = self.doubts.levers.get(place)?.of_choice(choice)?;
+        range.at(*sample.shares.get(place)?)
     }
 
     /// The samples of a block, in their order whatever the number of threads.
@@ -128,16 +122,17 @@ impl Sampler {
     }
 
     fn sample(&self, mut shares: Vec<f64>) -> Result<Sample, Problems> {
-        let place = |lever| self.uncertain.iter().position(|one| one.lever == lever);
+        let levers = &self.doubts.levers;
+        let place = |lever| levers.iter().position(|one| one.lever == lever);
         if let (Some(electricity), Some(fuel)) =
             (place(Lever::ElectricityRate), place(Lever::FuelRate))
         {
-            shares[fuel] = correlated(shares[fuel], shares[electricity], self.correlation);
+            let correlation = self.doubts.price_correlation;
+            shares[fuel] = correlated(shares[fuel], shares[electricity], correlation);
         }
         let mut case = self.case.clone();
         for contender in 0..case.contenders.len() {
-            let moves: Vec<(Lever, f64)> = self
-                .uncertain
+            let moves: Vec<(Lever, f64)> = levers
                 .iter()
                 .zip(&shares)
                 .filter_map(|(one, &share)| {
@@ -148,11 +143,17 @@ impl Sampler {
                 case.apply(contender, &moves)?;
             }
         }
+        // Every system meets the same year of the weather.
+        let years = case.site.years.len();
+        let year = match shares.last() {
+            Some(share) if self.draws_years() => ((share * years as f64) as usize).min(years - 1),
+            _ => 0,
+        };
         let systems = case.contenders.iter().map(|contender| {
-            let outcome = case.run_one(contender, None)?;
+            let outcome = case.run_year(contender, year)?;
             let sums = outcome.mean_sums();
             Ok(Drawn {
-                cost: outcome.costs.total,
+                cost: outcome.costs.by_year.get(year).copied().unwrap_or(0.0),
                 carbon_kg: sums.carbon_kg,
                 spf_h4: sums.spf_h4(),
                 hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
@@ -165,41 +166,5 @@ impl Sampler {
         });
         let systems = systems.collect::<Result<_, Problems>>()?;
         Ok(Sample { shares, systems })
-    }
-}
-
-impl Uncertain {
-    /// The usual spreads of every lever of a case that is uncertain for money, as triangles about where each stands. The shares drawn
-    /// are the same for every choice: what makes one machine fall short in this home makes another fall short too.
-    pub fn usual(case: &Case) -> Vec<Self> {
-        let each = Lever::ALL.iter().filter(|lever| {
-            lever.again() != Again::Bills
-                || matches!(lever, Lever::ElectricityRate | Lever::FuelRate)
-        });
-        each.filter_map(|&lever| {
-            let mut from = None;
-            let ranges: Vec<Option<Range>> = (0..case.contenders.len())
-                .map(|contender| {
-                    let shared = matches!(lever.again(), Again::Everyone | Again::Bills);
-                    if contender == 0 || (shared && contender > 1) {
-                        return None;
-                    }
-                    let spread = super::super::spread::spread_of(lever, case, contender)?;
-                    from = Some(spread.from.to_owned());
-                    let likely = lever.now(case, contender)?.clamp(spread.low, spread.high);
-                    Some(Range::Triangle {
-                        low: spread.low,
-                        likely,
-                        high: spread.high,
-                    })
-                })
-                .collect();
-            Some(Self {
-                lever,
-                ranges,
-                from: from?,
-            })
-        })
-        .collect()
     }
 }

@@ -55,28 +55,111 @@ pub fn shares(x: &[Vec<f64>], y: &[f64]) -> Option<Vec<SpreadShare>> {
 }
 
 fn share(rows: &[usize], x: &[Vec<f64>], y: &[f64], quantity: usize) -> Option<f64> {
-    let mut order = rows.to_vec();
-    order.sort_by(|&a, &b| x[a][quantity].total_cmp(&x[b][quantity]));
-    let count = order.len() as f64;
-    let mean = order.iter().map(|&row| y[row]).sum::<f64>() / count;
-    let whole: f64 = order.iter().map(|&row| (y[row] - mean).powi(2)).sum();
+    let count = rows.len() as f64;
+    let mean = rows.iter().map(|&row| y[row]).sum::<f64>() / count;
+    let whole: f64 = rows.iter().map(|&row| (y[row] - mean).powi(2)).sum();
     if whole.is_nan() || whole <= 0.0 {
         return None;
     }
+    let calmed = without_the_others(rows, x, y, quantity);
+    let mut order: Vec<(f64, f64)> = rows
+        .iter()
+        .map(|&row| x[row][quantity])
+        .zip(calmed)
+        .collect();
+    order.sort_by(|a, b| a.0.total_cmp(&b.0));
     let classes = (order.len() / LEAST_IN_CLASS).clamp(2, MOST_CLASSES);
-    let mut between = 0.0;
+    let (mut between, mut within) = (0.0, 0.0);
     for class in 0..classes {
         let (first, end) = (
             class * order.len() / classes,
             (class + 1) * order.len() / classes,
         );
         let members = &order[first..end];
-        let own = members.iter().map(|&row| y[row]).sum::<f64>() / members.len() as f64;
+        let own = members.iter().map(|(_, y)| y).sum::<f64>() / members.len() as f64;
         between += members.len() as f64 * (own - mean).powi(2);
+        within += members.iter().map(|(_, y)| (y - own).powi(2)).sum::<f64>();
     }
-    // Class means scatter by chance: (classes − 1) times the variance within is taken off (epsilon squared).
-    let within = (whole - between) / (count - classes as f64);
-    Some((between - (classes as f64 - 1.0) * within) / whole)
+    // Class means scatter by chance: (classes − 1) times the variance within is taken off (epsilon squared). What was fitted to the
+    // others is no longer free.
+    let others = x.first().map_or(0, Vec::len) - 1;
+    let free = (count - classes as f64 - others as f64).max(1.0);
+    Some((between - (classes as f64 - 1.0) * within / free) / whole)
+}
+
+/// The values less what the other quantities do to them in a straight line. It calms the class means and does not move them: the part
+/// that is taken off has no mean left at any value of the quantity itself (control variates). Where another quantity goes with it,
+/// only what that one does beyond is taken off, since knowing the one tells the other.
+fn without_the_others(rows: &[usize], x: &[Vec<f64>], y: &[f64], quantity: usize) -> Vec<f64> {
+    /// Correlations above this many standard errors are no chance.
+    const CORRELATED: f64 = 4.0;
+    let quantities = x.first().map_or(0, Vec::len);
+    let count = rows.len() as f64;
+    let centre = |of: &dyn Fn(usize) -> f64| -> Vec<f64> {
+        let mean = rows.iter().map(|&row| of(row)).sum::<f64>() / count;
+        rows.iter().map(|&row| of(row) - mean).collect()
+    };
+    let columns: Vec<Vec<f64>> = (0..quantities)
+        .map(|column| centre(&|row| x[row][column]))
+        .collect();
+    let values = centre(&|row| y[row]);
+    let product = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(a, b)| a * b).sum::<f64>();
+    let mut calmed: Vec<f64> = rows.iter().map(|&row| y[row]).collect();
+    let Some(slopes) = least_squares(&columns, &values) else {
+        return calmed;
+    };
+    let own = product(&columns[quantity], &columns[quantity]);
+    for (other, slope) in slopes
+        .iter()
+        .enumerate()
+        .filter(|(other, _)| *other != quantity)
+    {
+        let joint = product(&columns[quantity], &columns[other]);
+        let spread = (own * product(&columns[other], &columns[other])).sqrt();
+        let goes_with = (joint / spread).abs() * count.sqrt() > CORRELATED;
+        let told = if goes_with { joint / own } else { 0.0 };
+        for (i, value) in calmed.iter_mut().enumerate() {
+            *value -= slope * (columns[other][i] - told * columns[quantity][i]);
+        }
+    }
+    calmed
+}
+
+/// Slopes of values on columns, all centred, by the normal equations (Gaussian elimination with the greatest pivot); nothing where
+/// columns depend on one another. The columns are shares of one, so that the equations are well scaled.
+fn least_squares(columns: &[Vec<f64>], values: &[f64]) -> Option<Vec<f64>> {
+    /// A pivot below this part of the greatest diagonal is none.
+    const LEAST_PIVOT: f64 = 1e-9;
+    let product = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(a, b)| a * b).sum::<f64>();
+    let size = columns.len();
+    let mut rows: Vec<Vec<f64>> = columns
+        .iter()
+        .map(|one| {
+            let mut row: Vec<f64> = columns.iter().map(|other| product(one, other)).collect();
+            row.push(product(one, values));
+            row
+        })
+        .collect();
+    let greatest = (0..size).map(|i| rows[i][i]).fold(0.0, f64::max);
+    for i in 0..size {
+        let pivot = (i..size).max_by(|&a, &b| rows[a][i].abs().total_cmp(&rows[b][i].abs()))?;
+        rows.swap(i, pivot);
+        if rows[i][i].abs() <= LEAST_PIVOT * greatest {
+            return None;
+        }
+        for other in i + 1..size {
+            let factor = rows[other][i] / rows[i][i];
+            for column in i..=size {
+                rows[other][column] -= factor * rows[i][column];
+            }
+        }
+    }
+    let mut slopes = vec![0.0; size];
+    for i in (0..size).rev() {
+        let known: f64 = (i + 1..size).map(|j| rows[i][j] * slopes[j]).sum();
+        slopes[i] = (rows[i][size] - known) / rows[i][i];
+    }
+    Some(slopes)
 }
 
 #[cfg(test)]
@@ -134,6 +217,27 @@ mod tests {
         let parts = a.map(|a| 1.0 / (3.0 * (1.0 + a) * (1.0 + a)));
         let whole: f64 = parts.iter().map(|part| 1.0 + part).product::<f64>() - 1.0;
         check(&x, &y, &parts.map(|part| part / whole), 0.02);
+    }
+
+    /// Two quantities that go together by a correlation: knowing one tells part of the other. y = a + b of two normal scores with
+    /// correlation r: Var(E[y|a]) = (1 + r)², Var(y) = 2 + 2 r, so that either share is (1 + r)/2 = 0.8.
+    #[test]
+    fn what_goes_together_shares_its_share() {
+        use super::super::range::{Range, correlated};
+        let normal = Range::Normal {
+            mean: 0.0,
+            deviation: 1.0,
+        };
+        let mut x = sample(2);
+        for row in &mut x {
+            row[1] = correlated(row[1], row[0], 0.6);
+        }
+        let y: Vec<f64> = x
+            .iter()
+            .map(|p| normal.at(p[0]).unwrap() + normal.at(p[1]).unwrap())
+            .collect();
+        // 24 classes of equal number cut the tails of a normal score short by about a hundredth.
+        check(&x, &y, &[0.8, 0.8], 0.02);
     }
 
     #[test]

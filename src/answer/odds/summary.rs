@@ -1,0 +1,99 @@
+//! The odds in brief, for the estimate: no year is run but those of the samples.
+
+use serde::Serialize;
+
+use super::QuantilesAnswer;
+use super::make::{Sampled, quantiles};
+use super::matters::most_important;
+use super::words::{in_words, is_about_the_same};
+use crate::study::Case;
+use crate::study::odds::{Sample, Sampler};
+
+/// How many unknowns are told of a choice.
+const TOLD: usize = 2;
+
+/// The odds in brief.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct OddsSummary {
+    /// Samples drawn, each a year of every system.
+    pub samples: usize,
+    /// Independent blocks they were drawn in.
+    pub blocks: usize,
+    /// Seed they follow from.
+    pub seed: u64,
+    /// Every choice.
+    pub choices: Vec<ChoiceSummary>,
+}
+
+/// The odds of one choice in brief.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct ChoiceSummary {
+    /// The choice.
+    pub label: String,
+    /// Chance that it is cheaper than today's system.
+    pub chance_cheaper: f64,
+    /// Standard error of that chance; absent with a single block.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub chance_error: Option<f64>,
+    /// Today's yearly cost less its own, in the same sample.
+    pub saving: QuantilesAnswer,
+    /// Whether the chance says that neither is the cheaper.
+    pub about_the_same: bool,
+    /// The two unknowns that make most of the spread of the saving, the greater first.
+    pub most_important: Vec<Important>,
+    /// Chance and saving as a sentence.
+    pub sentence: String,
+    /// The unknowns as a sentence; absent where the sample does not tell.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub depends_on: Option<String>,
+}
+
+/// An unknown and its share of the spread.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct Important {
+    /// The lever.
+    pub lever: String,
+    /// The same as a family would say it.
+    pub words: String,
+    /// Share of the spread of the saving that knowing it would take away.
+    pub share: f64,
+    /// Lower limit of that share.
+    pub lo: f64,
+    /// Upper limit.
+    pub hi: f64,
+}
+
+/// The odds in brief from whole blocks of samples; nothing without samples.
+pub fn summary(case: &Case, sampler: &Sampler, blocks: &[Vec<Sample>]) -> Option<OddsSummary> {
+    let sampled = Sampled(blocks);
+    let choice = |place: usize| {
+        let label = &case.contenders[place].system.label;
+        let chance = sampled.chance_cheaper(place, 0)?;
+        let saving = quantiles(&sampled.saving(place))?;
+        let mut most_important = most_important(place, sampler, blocks);
+        most_important.truncate(TOLD);
+        let named: Vec<&str> = most_important
+            .iter()
+            .map(|one| one.words.as_str())
+            .collect();
+        let depends_on =
+            (!named.is_empty()).then(|| format!("It hangs most on {}.", named.join(" and on ")));
+        Some(ChoiceSummary {
+            label: label.clone(),
+            chance_cheaper: chance.chance,
+            chance_error: chance.error.is_finite().then_some(chance.error),
+            saving,
+            about_the_same: is_about_the_same(chance.chance),
+            sentence: in_words(label, chance.chance, saving, case.currency.code()),
+            most_important,
+            depends_on,
+        })
+    };
+    let choices: Option<Vec<_>> = (1..case.contenders.len()).map(choice).collect();
+    Some(OddsSummary {
+        samples: blocks.iter().map(Vec::len).sum(),
+        blocks: blocks.len(),
+        seed: sampler.seed(),
+        choices: choices?,
+    })
+}

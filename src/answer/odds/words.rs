@@ -1,0 +1,141 @@
+//! Odds as they are said.
+
+use super::QuantilesAnswer;
+use crate::study::Lever;
+
+/// Chances between which neither side is to be called cheaper. A choice of ours: two chances in three either way.
+const ABOUT_THE_SAME: std::ops::RangeInclusive<f64> = 0.3..=0.7;
+
+/// The odds of a choice in a sentence.
+pub(super) fn in_words(label: &str, chance: f64, saving: QuantilesAnswer, code: &str) -> String {
+    // Tens: the sample says no more.
+    let tens = |value: f64| (value / 10.0).round() * 10.0;
+    let (low, high) = (tens(saving.p10), tens(saving.p90));
+    let side = |value: f64| if value < 0.0 { "dearer" } else { "cheaper" };
+    let between = if side(low) == side(high) {
+        let (least, most) = (low.abs().min(high.abs()), low.abs().max(high.abs()));
+        format!("between {least:.0} and {most:.0} {code} {}", side(low))
+    } else {
+        format!(
+            "between {:.0} {code} {} and {high:.0} {code} {}",
+            low.abs(),
+            side(low),
+            side(high)
+        )
+    };
+    let same = if is_about_the_same(chance) {
+        "about the same as today; "
+    } else {
+        ""
+    };
+    let than = if same.is_empty() { " than today" } else { "" };
+    format!(
+        "{label}: {same}{} cheaper{than}; {between} a year in eight cases of ten.",
+        chance_in_words(chance)
+    )
+}
+
+/// Whether a chance of being cheaper says that neither is.
+pub(super) fn is_about_the_same(chance: f64) -> bool {
+    ABOUT_THE_SAME.contains(&chance)
+}
+
+/// A chance as it is said: "about 2 chances in 3 of being".
+fn chance_in_words(chance: f64) -> String {
+    const SAID: [(f64, &str); 9] = [
+        (0.1, "about 1 chance in 10"),
+        (0.2, "about 1 chance in 5"),
+        (0.333, "about 1 chance in 3"),
+        (0.4, "about 2 chances in 5"),
+        (0.5, "about an even chance"),
+        (0.6, "about 3 chances in 5"),
+        (0.667, "about 2 chances in 3"),
+        (0.8, "about 4 chances in 5"),
+        (0.9, "about 9 chances in 10"),
+    ];
+    if chance < 0.03 {
+        return "hardly a chance of being".to_owned();
+    }
+    if chance > 0.97 {
+        return "nearly certain to be".to_owned();
+    }
+    let nearest = SAID
+        .iter()
+        .min_by(|a, b| (a.0 - chance).abs().total_cmp(&(b.0 - chance).abs()));
+    nearest.map_or_else(String::new, |(_, words)| format!("{words} of being"))
+}
+
+/// A lever as a family would say it.
+pub(super) fn plain(lever: Lever) -> &'static str {
+    match lever {
+        Lever::ElectricityRate => "the price of electricity",
+        Lever::FuelRate => "the price of gas",
+        Lever::HeatLoss => "how much heat the home loses",
+        Lever::FlowTemperature => "how hot the water in the emitters has to be",
+        Lever::Indoor => "how warm the rooms are kept",
+        Lever::HotWater => "how much hot water is used",
+        Lever::RatedOutput => "the output of the machine",
+        Lever::FieldFactor => "how well the machine runs in a home",
+        Lever::LoopResistance => "how well the ground gives its heat",
+        Lever::LoopLength => "the length of the loop",
+        Lever::Capital => "what it costs to put in",
+        Lever::Grant => "the grant",
+        Lever::ElectricityCarbon => "the carbon of electricity",
+        Lever::BoilerEfficiency => "how well today's boiler burns",
+    }
+}
+
+/// The survey, reading or quote that finds a lever out; nothing for prices and carbon of years to come.
+pub(super) fn found_by(lever: Lever) -> Option<&'static str> {
+    match lever {
+        Lever::ElectricityRate | Lever::FuelRate | Lever::ElectricityCarbon => None,
+        Lever::HeatLoss => Some("a room-by-room survey or a winter of meter readings"),
+        Lever::FlowTemperature => Some("a survey of the radiators, room by room"),
+        Lever::Indoor => Some("a thermometer in the rooms for a week"),
+        Lever::HotWater => Some("meter readings of a summer month"),
+        Lever::RatedOutput => Some("the datasheet of the machine that is quoted"),
+        Lever::FieldFactor => {
+            Some("heat-meter readings of homes with the same machine and installer")
+        }
+        Lever::LoopResistance => Some("a thermal response test of the ground"),
+        Lever::LoopLength => Some("the loop designer's quote"),
+        Lever::Capital => Some("a quote"),
+        Lever::Grant => Some("asking whoever pays it"),
+        Lever::BoilerEfficiency => Some("a combustion test by a licensed engineer"),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn between(p10: f64, p90: f64) -> QuantilesAnswer {
+        QuantilesAnswer {
+            p10,
+            p50: 0.0,
+            p90,
+            p10_error: None,
+            p50_error: None,
+            p90_error: None,
+        }
+    }
+
+    #[test]
+    fn chances_are_said_without_false_decimals() {
+        assert_eq!(chance_in_words(0.664), "about 2 chances in 3 of being");
+        assert_eq!(chance_in_words(0.01), "hardly a chance of being");
+        assert_eq!(chance_in_words(0.52), "about an even chance of being");
+        assert_eq!(
+            in_words("Air source", 0.67, between(-68.0, 112.0), "GBP"),
+            "Air source: about the same as today; about 2 chances in 3 of being cheaper; between 70 GBP dearer and 110 GBP cheaper a year in eight cases of ten."
+        );
+        assert_eq!(
+            in_words("Ground", 0.99, between(191.0, 443.0), "GBP"),
+            "Ground: nearly certain to be cheaper than today; between 190 and 440 GBP cheaper a year in eight cases of ten."
+        );
+        assert_eq!(
+            in_words("Direct", 0.01, between(-443.0, -191.0), "GBP"),
+            "Direct: hardly a chance of being cheaper than today; between 190 and 440 GBP dearer a year in eight cases of ten."
+        );
+    }
+}

@@ -1,0 +1,132 @@
+//! What the sentences may speak of: the estimate as its JSON has it, and beside it what case and ledgers add.
+
+mod hour;
+mod next;
+mod sources;
+mod system;
+
+use serde::Serialize;
+use serde_json::{Map, Value, json};
+
+use super::pictures::Material;
+use hour::coldest;
+use next::next_steps;
+use sources::{assumptions, refrigerants};
+use system::system;
+
+/// Systems beside each other in a table, today's among them.
+const ABREAST: usize = 4;
+
+/// Choices told on the first page.
+const NEAREST: usize = 3;
+
+/// Below this share of today's cost a difference is told as none. A choice of ours.
+pub(super) const ABOUT_THE_SAME: f64 = 0.02;
+
+/// The context of the sentences.
+pub(super) fn facts(material: &Material<'_>) -> Value {
+    let estimate = material.estimate;
+    let mut facts = object(estimate);
+    let odds = facts.get("odds").cloned().unwrap_or_default();
+    let systems: Vec<Value> = (0..estimate.systems.len())
+        .map(|i| with_odds(system(material, i), &odds))
+        .collect();
+    let (today, mut choices): (Vec<&Value>, Vec<&Value>) =
+        systems.iter().partition(|s| s["today"] == true);
+    let groups = groups(&today, &choices);
+    choices.sort_by(|a, b| number(a, "cost").total_cmp(&number(b, "cost")));
+    let cheapest = |kind: &str| choices.iter().find(|s| s["kind"] == kind).copied();
+    let mut put = |name: &str, value: Value| {
+        facts.insert(name.to_owned(), value);
+    };
+    if let Some(today) = today.first() {
+        put("today", (*today).clone());
+    }
+    if let (Some(best), Some(worst)) = (choices.first(), choices.last()) {
+        let saving = number(best, "saving");
+        put(
+            "same",
+            json!(saving.abs() < ABOUT_THE_SAME * (number(best, "cost") + saving).abs()),
+        );
+        put("best", (*best).clone());
+        put("worst", (*worst).clone());
+    } else {
+        put("best", json!({}));
+    }
+    if let Some(air) = cheapest("air-source") {
+        put("best_air", air.clone());
+        if let Some(ground) = cheapest("ground-source") {
+            put(
+                "air_ground_gap",
+                json!(number(ground, "cost") - number(air, "cost")),
+            );
+        }
+    }
+    if let Some(ground) = cheapest("ground-source") {
+        put("best_ground", ground.clone());
+    }
+    put(
+        "nearest",
+        json!(choices.iter().take(NEAREST).collect::<Vec<_>>()),
+    );
+    put("next_steps", next_steps(&choices, estimate));
+    put("choices", json!(choices));
+    put("groups", json!(groups));
+    put("several_years", json!(estimate.weather.years > 1));
+    let peaks = estimate.systems.iter().map(|s| s.peak_electric_kw);
+    put("peak_kw", json!(peaks.fold(0.0, f64::max)));
+    if let Some((hour, in_the_hour)) = coldest(material) {
+        let (todays, others): (Vec<&Value>, Vec<&Value>) =
+            in_the_hour.iter().partition(|s| s["today"] == true);
+        put("hour_groups", json!(self::groups(&todays, &others)));
+        put("coldest", hour);
+    }
+    if let Some(lifetime) = &estimate.lifetime {
+        let systems: Vec<Value> = lifetime.systems.iter().map(|s| json!(s)).collect();
+        let (today, others): (Vec<&Value>, Vec<&Value>) =
+            systems.iter().partition(|s| s["today"] == true);
+        put("lifetime_groups", json!(self::groups(&today, &others)));
+    }
+    let (flammable, cautions) = refrigerants(material);
+    if !flammable.is_empty() {
+        put("flammable", json!(flammable.join(" and ")));
+    }
+    put("refrigerant_cautions", json!(cautions));
+    put("assumptions", assumptions(estimate));
+    put("systems", json!(systems));
+    put("version", json!(env!("CARGO_PKG_VERSION")));
+    Value::Object(facts)
+}
+
+/// A system with the odds of its label, where they were drawn.
+fn with_odds(mut system: Value, odds: &Value) -> Value {
+    let of_it = odds["choices"]
+        .as_array()
+        .and_then(|choices| choices.iter().find(|one| one["label"] == system["label"]))
+        .cloned();
+    if let (Some(found), Some(facts)) = (of_it, system.as_object_mut()) {
+        facts.insert("odds".to_owned(), found);
+    }
+    system
+}
+
+/// Anything as a JSON object; what is no object is an empty one.
+fn object(value: &impl Serialize) -> Map<String, Value> {
+    match serde_json::to_value(value) {
+        Ok(Value::Object(map)) => map,
+        _ => Map::new(),
+    }
+}
+
+fn number(system: &Value, field: &str) -> f64 {
+    system[field].as_f64().unwrap_or(f64::NAN)
+}
+
+/// Today's system with up to three choices beside it, again and again.
+fn groups(today: &[&Value], choices: &[&Value]) -> Vec<Vec<Value>> {
+    let beside = |group: &[&Value]| today.iter().chain(group).map(|s| (*s).clone()).collect();
+    if choices.is_empty() {
+        return vec![beside(&[])];
+    }
+    choices.chunks(ABREAST - 1).map(beside).collect()
+}

@@ -1,0 +1,159 @@
+//! The pictures of the odds, and every sample as a row.
+
+use super::pictures::Drawn;
+use crate::answer::odds::OddsAnswer;
+use crate::chart::{
+    ChartError, ChoiceSaving, CostOdds, CostSpread, SavingOdds, SpreadShares, UnknownShare,
+    cost_odds, saving_odds, spread_shares,
+};
+use crate::locale::Locale;
+use crate::study::Case;
+use crate::study::odds::{Quantiles, Sample, Sampler};
+
+/// Saving of every choice, cost of every system, and what makes the spread.
+///
+/// # Errors
+/// When a picture cannot be drawn.
+pub fn odds_pictures(
+    answer: &OddsAnswer,
+    case: &Case,
+    blocks: &[Vec<Sample>],
+    locale: &Locale,
+) -> Result<Vec<Drawn>, ChartError> {
+    let marks = &locale.marks;
+    let samples = || blocks.iter().flatten();
+    let choices = answer
+        .choices
+        .iter()
+        .enumerate()
+        .map(|(i, choice)| ChoiceSaving {
+            label: choice.label.clone(),
+            saving: samples()
+                .map(|sample| sample.systems[0].cost - sample.systems[i + 1].cost)
+                .collect(),
+            chance_error: choice.chance_error,
+        });
+    let saving = SavingOdds {
+        currency: answer.currency.clone(),
+        choices: choices.collect(),
+    };
+    let systems = case
+        .contenders
+        .iter()
+        .enumerate()
+        .filter_map(|(i, contender)| {
+            let costs: Vec<f64> = samples().map(|sample| sample.systems[i].cost).collect();
+            let Quantiles { p10, p50, p90 } = Quantiles::of(&costs)?;
+            Some(CostSpread {
+                label: contender.system.label.clone(),
+                p10,
+                p50,
+                p90,
+            })
+        });
+    let cost = CostOdds {
+        currency: answer.currency.clone(),
+        systems: systems.collect(),
+    };
+    let mut drawn = vec![
+        Drawn {
+            name: "saving_odds".to_owned(),
+            caption:
+                "What each choice saves in every sample; left of the line it is dearer than today."
+                    .to_owned(),
+            picture: saving_odds(&saving, marks)?,
+        },
+        Drawn {
+            name: "cost_odds".to_owned(),
+            caption: "Cost of a year of every system, from P10 to P90.".to_owned(),
+            picture: cost_odds(&cost, marks)?,
+        },
+    ];
+    if !answer.what_matters.is_empty() {
+        let unknowns = answer.what_matters.iter().map(|one| UnknownShare {
+            label: one.lever.clone(),
+            share: one.share,
+            low: one.lo,
+            high: one.hi,
+        });
+        let shares = SpreadShares {
+            outcome: format!("Saving of {}", answer.about),
+            unknowns: unknowns.collect(),
+        };
+        drawn.push(Drawn {
+            name: "spread_shares".to_owned(),
+            caption: "What makes the spread of the saving, with limits.".to_owned(),
+            picture: spread_shares(&shares, marks)?,
+        });
+    }
+    Ok(drawn)
+}
+
+/// Every sample as CSV: what each lever was, then what every system came to.
+///
+/// # Errors
+/// When a row cannot be written.
+pub fn samples_csv(
+    case: &Case,
+    sampler: &Sampler,
+    blocks: &[Vec<Sample>],
+) -> Result<Vec<u8>, csv::Error> {
+    let systems: Vec<&str> = case
+        .contenders
+        .iter()
+        .map(|contender| contender.system.label.as_str())
+        .collect();
+    // A lever of the home stands once, a lever of a choice once for every choice that has it.
+    let mut columns = Vec::new();
+    for (place, one) in sampler.uncertain().iter().enumerate() {
+        let of: Vec<usize> = (1..one.ranges.len())
+            .filter(|choice| one.ranges[*choice].is_some())
+            .collect();
+        for choice in of {
+            let whose = match one.is_shared() {
+                true => String::new(),
+                false => format!(" of {}", systems[choice]),
+            };
+            columns.push((place, choice, format!("{}{whose}", one.lever.name())));
+        }
+    }
+    let mut table = csv::Writer::from_writer(Vec::new());
+    let mut header = vec!["block".to_owned()];
+    header.extend(columns.iter().map(|(_, _, name)| name.clone()));
+    for system in &systems {
+        for figure in [
+            "cost",
+            "carbon_kg",
+            "spf_h4",
+            "hours_backup",
+            "min_indoor_c",
+        ] {
+            header.push(format!("{figure} of {system}"));
+        }
+    }
+    table.write_record(&header)?;
+    for (block, samples) in blocks.iter().enumerate() {
+        for sample in samples {
+            let mut row = vec![(block + 1).to_string()];
+            for (place, choice, _) in &columns {
+                let value = sampler.value(sample, *place, *choice);
+                row.push(value.map_or_else(String::new, |value| format!("{value:.6}")));
+            }
+            for drawn in &sample.systems {
+                row.push(format!("{:.2}", drawn.cost));
+                row.push(format!("{:.1}", drawn.carbon_kg));
+                // Missing stays missing: a boiler has no SPF.
+                row.push(
+                    drawn
+                        .spf_h4
+                        .map_or_else(String::new, |spf| format!("{spf:.4}")),
+                );
+                row.push(format!("{:.0}", drawn.hours_backup));
+                row.push(format!("{:.2}", drawn.min_indoor_c));
+            }
+            table.write_record(&row)?;
+        }
+    }
+    let rows = table.into_inner();
+    rows.map_err(|error| csv::Error::from(error.into_error()))
+}
