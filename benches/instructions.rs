@@ -46,7 +46,10 @@ fn propane() -> Equation {
 }
 
 fn weather_bytes() -> Vec<u8> {
-    let path = concat!(env!("CARGO_MANIFEST_DIR"), "/weather_samples/morvane_sound.csv");
+    let path = concat!(
+        env!("CARGO_MANIFEST_DIR"),
+        "/weather_samples/morvane_sound.csv"
+    );
     std::fs::read(path).unwrap()
 }
 
@@ -61,7 +64,9 @@ fn exact_cycle(equation: Equation) -> f64 {
         isentropic_efficiency: 0.7,
         mass_flow_kg_per_s: None,
     };
-    Cycle::solve(black_box(&equation), inputs).unwrap().cop_heating()
+    Cycle::solve(black_box(&equation), inputs)
+        .unwrap()
+        .cop_heating()
 }
 
 #[library_benchmark]
@@ -99,7 +104,14 @@ fn loop_of_a_year((case, index): (Case, usize)) -> f64 {
     let mut state = State::at_rest(&contender.system, contender.indoor_c);
     let mut totals = Totals::new(&case.site.month0);
     let hours = 0..case.site.axis.hours;
-    run(&case.site, &contender.system, &contender.plan, hours, &mut state, &mut totals);
+    run(
+        &case.site,
+        &contender.system,
+        &contender.plan,
+        hours,
+        &mut state,
+        &mut totals,
+    );
     totals.all().space_wanted_kwh
 }
 
@@ -107,13 +119,21 @@ fn loop_of_a_year((case, index): (Case, usize)) -> f64 {
 #[library_benchmark]
 #[bench::air(args = (2), setup = system)]
 fn metered_year((case, index): (Case, usize)) -> usize {
-    let outcome = case.run_one(black_box(&case.contenders[index]), None).unwrap();
+    let outcome = case
+        .run_one(black_box(&case.contenders[index]), None)
+        .unwrap();
     outcome.years.len()
 }
 
 library_benchmark_group!(
     name = parts,
-    benchmarks = [exact_cycle, property_table, fit_a_sheet, build_map, read_weather]
+    benchmarks = [
+        exact_cycle,
+        property_table,
+        fit_a_sheet,
+        build_map,
+        read_weather
+    ]
 );
 library_benchmark_group!(name = years, benchmarks = [loop_of_a_year, metered_year]);
 main!(library_benchmark_groups = [parts, years]);

@@ -53,7 +53,12 @@ impl Folder {
     /// # Errors
     /// Those of the fit.
     pub fn fitted(&self, sheet: &Sheet) -> Result<Fitted, Problems> {
-        if let Some((_, fitted)) = self.fitted.borrow().iter().find(|(known, _)| known == sheet) {
+        if let Some((_, fitted)) = self
+            .fitted
+            .borrow()
+            .iter()
+            .find(|(known, _)| known == sheet)
+        {
             return Ok(fitted.clone());
         }
         let fitted = fit(sheet)?;

@@ -119,12 +119,7 @@ impl Map {
         Spot {
             map: self,
             nodes: [at, at + dj, at + di, at + di + dj],
-            weights: [
-                (1.0 - s) * (1.0 - f),
-                (1.0 - s) * f,
-                s * (1.0 - f),
-                s * f,
-            ],
+            weights: [(1.0 - s) * (1.0 - f), (1.0 - s) * f, s * (1.0 - f), s * f],
         }
     }
 

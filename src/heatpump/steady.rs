@@ -215,7 +215,9 @@ impl Secant {
     /// The next place, from a place and what the substitution would add to it.
     pub fn next(&mut self, at: f64, off: f64) -> f64 {
         let step = match self.last {
-            Some((before, off_before)) if off_before != off => off * (at - before) / (off_before - off),
+            Some((before, off_before)) if off_before != off => {
+                off * (at - before) / (off_before - off)
+            }
             _ => off,
         };
         self.last = Some((at, off));
