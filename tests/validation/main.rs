@@ -18,6 +18,7 @@ mod machine;
 mod odds;
 mod rating;
 mod refrigerant;
+mod reimplemented;
 mod signature;
 mod table;
 mod tariff;
@@ -51,6 +52,10 @@ const ROOMS: &[(&str, fn() -> Vec<Row>)] = &[
     ("Odds", odds::rows),
     ("Carbon", carbon::rows),
     ("The year", year::rows),
+    (
+        "The year of three homes, reimplemented",
+        reimplemented::rows,
+    ),
 ];
 
 /// A seeded fault is switched on for the whole process: what makes rows takes turns.
