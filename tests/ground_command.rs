@@ -57,11 +57,12 @@ fn the_json_has_the_promised_shape_and_the_ground_grows_colder() {
     // What was not looked for is absent.
     assert!(first.get("sizing").is_none());
     let short = &first["others"][0];
-    assert!(short["years"][4]["hours_stopped"].as_u64().unwrap() > 20);
+    // A machine with an inverter turns down to what the bore bears before it stops.
+    assert!(short["years"][4]["hours_turned_down"].as_u64().unwrap() > 20);
     assert!(short["years"][4]["backup_kwh"].as_f64().unwrap() > 20.0);
     let told = short["findings"][0]["what"].as_str().unwrap();
     assert!(
-        told.contains("stands in") && told.contains("backup"),
+        told.contains("is turned down in") && told.contains("backup"),
         "{told}"
     );
 }
