@@ -168,8 +168,12 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
         ),
         Lever::FuelRate => {
             let account = pair.today().fuel.as_ref().or(choice.fuel.as_ref());
+            let what = account.map_or_else(
+                || "fuel".to_owned(),
+                |account| account.tariff.fuel.name().replace('-', " "),
+            );
             times(
-                "gas",
+                &what,
                 "dearer",
                 "cheaper",
                 account.and_then(|account| rates(account, value)),

@@ -4,10 +4,10 @@ use rust_decimal::prelude::ToPrimitive as _;
 use schemars::JsonSchema;
 use serde::Deserialize;
 
+use super::capital::PutIn;
 use super::defaults::{self, Default};
 use super::notes::Notes;
 use super::raw::{SystemKind, SystemTable};
-use super::system::PutIn;
 use crate::bounds::{self, Bound};
 use crate::document::{Check, Leaf, LeafValue, Section};
 use crate::lifetime::{Outlay, Part, Path, Terms};

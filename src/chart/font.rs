@@ -73,6 +73,24 @@ pub(crate) fn advance_em(font: &FontRef<'_>, units_per_em: f32, c: char) -> f32 
     }
 }
 
+/// The glyph and the advance in ems of every character; a sign the font lacks is an open box.
+#[cfg(feature = "pdf")]
+pub(crate) fn glyphs(text: &str, weight: Weight) -> Vec<(u16, f32)> {
+    let Ok(font) = face(weight) else {
+        return Vec::new();
+    };
+    let em = font.units_per_em().unwrap_or(1000.0);
+    text.chars()
+        .map(|c| {
+            let glyph = match font.glyph_id(c) {
+                id if id.0 == 0 => font.glyph_id('□'),
+                id => id,
+            };
+            (glyph.0, advance_em(font, em, c))
+        })
+        .collect()
+}
+
 /// `text` as it may be drawn: one line, without control characters, without marks that would turn the reading
 /// direction of what follows, without characters that XML forbids.
 pub fn clean(text: &str) -> String {

@@ -77,6 +77,8 @@ pub use emitter_study::{EmitterStep, EmitterStudy, emitter_study};
 pub use energy_flow::{EnergyFlow, Flow, FlowKind, energy_flow};
 pub use font::clean as plain_line;
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
+#[cfg(feature = "pdf")]
+pub(crate) use font::{Weight, glyphs, width as text_width};
 pub use geometry::Rect;
 pub use label::Label;
 pub use load_duration::{LoadDuration, load_duration};
@@ -86,6 +88,8 @@ pub use numbers::Marks;
 pub use paint::PNG_PIXELS;
 pub use palette::Colour;
 pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
+#[cfg(feature = "pdf")]
+pub(crate) use scene::Item;
 pub use scene::WIDTH;
 pub use signature::{MeterPoint, SignaturePlot, signature_plot};
 pub use swings::{Swing, Swings, swings};
@@ -138,6 +142,12 @@ impl Picture {
     /// Every text of the picture with the room it takes.
     pub fn labels(&self) -> &[Label] {
         &self.scene.labels
+    }
+
+    /// What is painted, in order, for an output outside this room.
+    #[cfg(feature = "pdf")]
+    pub(crate) fn items(&self) -> &[Item] {
+        &self.scene.items
     }
 
     /// The whole picture, in points.
@@ -239,6 +249,12 @@ fn named(label: &str) -> &str {
     } else {
         label
     }
+}
+
+/// A line of regular text shortened until it is at most `room` wide.
+#[cfg(feature = "pdf")]
+pub(crate) fn fit_line(text: &str, size: f64, room: f64) -> String {
+    font::fit(text, size, Weight::Regular, room)
 }
 
 /// A name as the first sentence of a subtitle: at most `room` wide, and closed with a full stop.

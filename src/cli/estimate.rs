@@ -10,6 +10,8 @@ use crate::brief::{Brief, DEFAULTS};
 use crate::chart::ChartError;
 use crate::home::Pattern;
 use crate::problem::Problems;
+#[cfg(feature = "pdf")]
+use crate::report::report_pdf;
 use crate::report::{
     Drawn, Material, accounts_text, estimate_text, home_text, ledger_csv, patterns_text, pictures,
     report_html,
@@ -20,6 +22,12 @@ use crate::year::Ledger;
 /// Names of the files that are always written.
 const RESULT: &str = "result.json";
 const REPORT: &str = "report.html";
+#[cfg(feature = "pdf")]
+const PAPER: &str = "report.pdf";
+#[cfg(feature = "pdf")]
+const ALWAYS: &[&str] = &[RESULT, REPORT, PAPER];
+#[cfg(not(feature = "pdf"))]
+const ALWAYS: &[&str] = &[RESULT, REPORT];
 
 /// Yearly cost and carbon of every system of a brief, beside what heats the home today.
 ///
@@ -33,7 +41,7 @@ Examples:
 pub struct Args {
     /// Brief (TOML); without one, the built-in demonstration home.
     brief: Option<PathBuf>,
-    /// Folder for report.html, the pictures, the ledgers (CSV) and result.json.
+    /// Folder for report.html, report.pdf, the pictures, the ledgers (CSV) and result.json.
     #[arg(long, value_name = "DIR")]
     out: Option<PathBuf>,
     /// Overwrite files that are there already.
@@ -76,7 +84,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         None => Brief::demonstration()?,
     };
     if let Some(folder) = &args.out {
-        check_folder(folder, &[RESULT, REPORT], args.force)?;
+        check_folder(folder, ALWAYS, args.force)?;
     }
     let mut ledgers = Vec::new();
     let mut outcomes = Vec::with_capacity(brief.case.contenders.len());
@@ -155,6 +163,11 @@ fn files(folder: &Path, material: &Material<'_>) -> Result<Vec<NewFile>, Box<dyn
     }
     let page = report_html(material, &drawn)?;
     files.push(NewFile::new(folder.join(REPORT), page));
+    #[cfg(feature = "pdf")]
+    files.push(NewFile::new(
+        folder.join(PAPER),
+        report_pdf(material, &drawn)?,
+    ));
     Ok(files)
 }
 

@@ -11,6 +11,8 @@ pub enum ReportError {
     Picture(ChartError),
     /// A sentence could not be filled in.
     Sentence(minijinja::Error),
+    /// The pages could not be written.
+    Paper(String),
 }
 
 impl From<ChartError> for ReportError {
@@ -29,6 +31,7 @@ impl fmt::Display for ReportError {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         match self {
             Self::Picture(error) => error.fmt(f),
+            Self::Paper(why) => write!(f, "the PDF of the report cannot be written: {why}"),
             // The alternate form names template and line.
             Self::Sentence(error) => {
                 write!(f, "a sentence of the report cannot be written: {error:#}")

@@ -346,8 +346,27 @@ fn assumptions(estimate: &Estimate) -> Value {
     json!(rows)
 }
 
-/// Measured, declared, computed, assumed or standard.
+/// Measured, declared, computed, standard or assumed. Only a source that names a publication makes a standard.
 fn source_kind(from: &str) -> &'static str {
+    const PUBLICATIONS: &[&str] = &[
+        "EN ",
+        "ISO ",
+        "IEC ",
+        "BS ",
+        "ASHRAE",
+        "CIBSE",
+        "VDI ",
+        "SAP ",
+        "IPCC",
+        "Regulation",
+        "Directive",
+        "doi",
+        "convention",
+        "conversion factors",
+        "Green Book",
+        "published",
+        "handbook",
+    ];
     let says = |words: &[&str]| words.iter().any(|word| from.contains(word));
     if says(&["meter reading", "bills"]) {
         "measured"
@@ -357,8 +376,10 @@ fn source_kind(from: &str) -> &'static str {
         "declared"
     } else if says(&["weather file"]) {
         "computed"
-    } else {
+    } else if says(PUBLICATIONS) {
         "standard"
+    } else {
+        "assumed"
     }
 }
 
@@ -439,6 +460,17 @@ mod tests {
             "assumed"
         );
         assert_eq!(source_kind("EN 14825 default"), "standard");
+        assert_eq!(
+            source_kind("UK government conversion factors 2025"),
+            "standard"
+        );
+        for no_publication in [
+            "no pattern is given",
+            "no forecast: prices stay as they are above inflation",
+            "the quick option: it over-chills cold nights",
+        ] {
+            assert_eq!(source_kind(no_publication), "assumed", "{no_publication}");
+        }
         assert_eq!(source_kind("brief"), "declared");
         assert_eq!(
             source_kind("annual wave of the weather file carried down"),

@@ -1,7 +1,7 @@
 //! Answers as text, page and files.
 //!
 //! The long form is written once: `sections/*.md` are Markdown templates, `facts` is what they may speak of, `sentences` fills
-//! them, `blocks` reads the Markdown, `page` sets it as HTML. `pictures` fills the chart room's pictures.
+//! them, `blocks` reads the Markdown, `page` sets it as HTML and `pdf` on paper. `pictures` fills the chart room's pictures.
 
 mod account;
 mod blocks;
@@ -14,6 +14,8 @@ mod hours;
 mod ledger;
 mod odds;
 mod page;
+#[cfg(feature = "pdf")]
+mod pdf;
 mod pictures;
 mod sentences;
 mod study;
@@ -28,6 +30,8 @@ pub use home::{home_text, patterns_text};
 pub use ledger::{ledger_csv, ledger_legend};
 pub use odds::odds_text;
 pub use page::report_html;
+#[cfg(feature = "pdf")]
+pub use pdf::report_pdf;
 pub use pictures::{Drawn, Material, pictures};
 pub use study::study_text;
 pub use table::{plain_table, plain_table_within};

@@ -51,8 +51,8 @@ pub fn report_html(material: &Material<'_>, drawn: &[Drawn]) -> Result<String, R
     Ok(page)
 }
 
-/// What stands above the question.
-fn place(material: &Material<'_>) -> String {
+/// What stands above the question, and at the head of the pages on paper.
+pub(super) fn place(material: &Material<'_>) -> String {
     match &material.estimate.home.label {
         Some(label) => format!("Winterledger: {label}"),
         None => "Winterledger".to_owned(),
