@@ -249,14 +249,16 @@ fn label_phases(
         .iter()
         .map(|point| frame.at(point.0, point.1).1)
         .fold(f64::INFINITY, f64::min);
-    let below = [22.0, 36.0, -10.0, -24.0];
-    let above = [-10.0, 22.0, -24.0, 36.0];
-    let offsets = if y - top_y < ROOM_BELOW_DOME {
-        below
+    let places: Vec<_> = if y - top_y < ROOM_BELOW_DOME {
+        // Beside the middle as well, where the line of dry vapour comes down through it.
+        [0.0, -25.0, -45.0, -65.0]
+            .map(|dx| ((x + dx, y + 22.0), Anchor::Middle))
+            .into()
     } else {
-        above
+        [-10.0, 22.0, -24.0, 36.0]
+            .map(|dy| ((x, y + dy), Anchor::Middle))
+            .into()
     };
-    let places: Vec<_> = offsets.map(|dy| ((x, y + dy), Anchor::Middle)).into();
     scene.place(&frame.area, &condensing, &places, set);
     let evaporating = format!("evaporating {}", temperature(data.evaporating_c));
     let (x, y) = level(f64::min, f64::INFINITY);

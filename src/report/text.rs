@@ -255,7 +255,9 @@ fn assumptions(estimate: &Estimate, sources: bool) -> String {
 }
 
 pub(super) fn wrapped(text: &str, first: &str, others: &str) -> String {
+    // Said outright: otherwise another crate's features choose how lines are broken.
     let options = textwrap::Options::new(usize::from(WIDTH))
+        .wrap_algorithm(textwrap::WrapAlgorithm::FirstFit)
         .initial_indent(first)
         .subsequent_indent(others);
     textwrap::fill(text, options)
