@@ -9,6 +9,7 @@ use sha2::{Digest as _, Sha256};
 
 use super::demo;
 use crate::answer::InputFile;
+use crate::heatpump::{Fitted, Sheet, fit};
 use crate::problem::{Place, Problem, Problems};
 
 /// Where named files come from, and which of them were read.
@@ -16,6 +17,7 @@ use crate::problem::{Place, Problem, Problems};
 pub(super) struct Folder {
     root: Root,
     read: RefCell<Vec<InputFile>>,
+    fitted: RefCell<Vec<(Sheet, Fitted)>>,
 }
 
 #[derive(Debug)]
@@ -44,7 +46,28 @@ impl Folder {
         Self {
             root,
             read: RefCell::default(),
+            fitted: RefCell::default(),
         }
+    }
+
+    /// The machine of a sheet: each fitted once, however many systems have it.
+    ///
+    /// # Errors
+    /// Those of the fit.
+    pub fn fitted(&self, sheet: &Sheet) -> Result<Fitted, Problems> {
+        if let Some((_, fitted)) = self
+            .fitted
+            .borrow()
+            .iter()
+            .find(|(known, _)| known == sheet)
+        {
+            return Ok(fitted.clone());
+        }
+        let fitted = fit(sheet)?;
+        self.fitted
+            .borrow_mut()
+            .push((sheet.clone(), fitted.clone()));
+        Ok(fitted)
     }
 
     /// Keeps the checksum of a file that was read; each once.

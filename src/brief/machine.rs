@@ -9,7 +9,7 @@ use super::notes::Notes;
 use super::raw::{SystemKind, SystemTable};
 use crate::bounds;
 use crate::document::{Check, Leaf, Section};
-use crate::heatpump::{HeatPump, Sheet, SourceKind, fit};
+use crate::heatpump::{HeatPump, Sheet, SourceKind};
 use crate::problem::{Finding, Problem, Problems, Severity};
 use crate::refrigerant::Refrigerant;
 use crate::units::{Power, Temperature, parse};
@@ -72,7 +72,7 @@ pub(super) fn machine(
     };
     let sheet = sheet?;
     source_agrees(table, kind, &sheet, check)?;
-    let fitted = check.take(fit(&sheet))?;
+    let fitted = check.take(folder.fitted(&sheet))?;
     let scaled = match rated_output {
         Some(output) if table.typical_machine.is_some() => fitted.heat_pump.scaled_to(output.kw()),
         _ => fitted.heat_pump.clone(),

@@ -89,7 +89,7 @@ pub(crate) fn png(picture: &Picture) -> Result<Vec<u8>, ChartError> {
     let mut encoder = png::Encoder::new(&mut out, width, height);
     encoder.set_color(png::ColorType::Rgb);
     encoder.set_depth(png::BitDepth::Eight);
-    encoder.set_compression(png::Compression::Best);
+    encoder.set_compression(png::Compression::Default);
     encoder.set_filter(png::FilterType::Up);
     // 300 pixels to the inch, so that a word processor places the picture at 183 mm.
     encoder.set_pixel_dims(Some(png::PixelDimensions {

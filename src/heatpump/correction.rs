@@ -2,7 +2,10 @@
 //!
 //! Three fields of factors: COP, greatest output, least output. Each is the smoothest surface through the residuals (a
 //! Gaussian process with a squared-exponential kernel, textbook), fades to nothing away from the points, and never leaves
-//! ±10 %. A single strength shrinks all three until the machine is monotone.
+//! ±10 %: the bounded form is `B tanh(g/B)` with B = 10 % and g through `B artanh(residual/B)`. A residual is tested over physical
+//! value less one: of COP at the point's output before frost, whose share of the nominal output is the third axis; of greatest and
+//! least output after frost, whose fields do not know a third axis. A single strength shrinks all three until the machine is
+//! monotone.
 
 use super::fit::{AtPoint, PhysicalFit, at_point};
 use super::machine::{Machine, Operation, SolveError};

@@ -6,7 +6,7 @@
 use super::duty::{ColdSide, Delivered, Duty, Flags};
 use super::heat_pump::HeatPump;
 use super::part_load::{running_rise_k, start_up_loss_kw, starts_per_hour};
-use super::steady::{Steady, Wanted};
+use super::steady::{Held, Secant, Steady, Wanted};
 
 /// Change of the running flow temperature below which its substitution ends, K, and the most substitutions.
 const RISE_TOLERANCE_K: f64 = 1e-5;
@@ -42,12 +42,19 @@ impl HeatPump {
         let wanted_kw = duty.heat_kw * lifted / self.scale;
         let moisture = self.moisture(cold);
 
-        let full = self.steady(cold, flow_c, Wanted::Greatest, moisture);
-        let (mut steady, flow_c, mut share) = if duty.at_full_output || wanted_kw >= full.net_kw() {
-            flags.short = wanted_kw > full.net_kw() * (1.0 + ENOUGH);
-            (full, flow_c, (wanted_kw / full.net_kw()).min(1.0))
+        let wanted = if duty.at_full_output {
+            Wanted::Greatest
         } else {
-            self.below_greatest(cold, duty, wanted_kw, flow_c, highest_c, moisture)
+            Wanted::Net(wanted_kw)
+        };
+        let steady = self.steady(cold, flow_c, wanted, moisture);
+        let (mut steady, flow_c, mut share) = match steady.held {
+            Held::Between => (steady, flow_c, 1.0),
+            Held::AtLeast => self.on_and_off(steady, cold, duty, wanted_kw, flow_c, moisture),
+            Held::AtGreatest => {
+                flags.short = wanted_kw > steady.net_kw() * (1.0 + ENOUGH);
+                (steady, flow_c, (wanted_kw / steady.net_kw()).min(1.0))
+            }
         };
         if steady.source_c < core.limits.lowest_source_c {
             let Some(held) = self.turned_down(cold, flow_c, moisture) else {
@@ -85,31 +92,28 @@ impl HeatPump {
         steady.net_kw() * self.scale
     }
 
-    /// Runs at the heat wanted, or on and off when that is below the least: the machine, its flow temperature and the share of the
-    /// time that it runs.
-    fn below_greatest(
+    /// Goes on and off because its least output at a flow temperature is more than is wanted: the machine while running, its flow
+    /// temperature then and the share of the time that it runs.
+    fn on_and_off(
         &self,
+        mut least: Steady,
         cold: &ColdSide,
         duty: &Duty,
         wanted_kw: f64,
         flow_c: f64,
-        highest_c: f64,
         moisture: f64,
     ) -> (Steady, f64, f64) {
-        let mut least = self.steady(cold, flow_c, Wanted::Least, moisture);
-        if wanted_kw >= least.net_kw() {
-            let steady = self.steady(cold, flow_c, Wanted::Net(wanted_kw), moisture);
-            return (steady, flow_c, 1.0);
-        }
+        let highest_c = self.core.limits.highest_flow_at(cold.open_c);
         let mut running_c = flow_c;
+        let mut secant = Secant::default();
         for _ in 0..MOST_RISE_STEPS {
             let share = (wanted_kw / least.net_kw()).min(1.0);
-            let next = (flow_c + running_rise_k(duty.spread_k, share)).min(highest_c);
-            let change = (next - running_c).abs();
-            if change < RISE_TOLERANCE_K {
+            let next_c = (flow_c + running_rise_k(duty.spread_k, share)).min(highest_c);
+            let change_k = next_c - running_c;
+            if change_k.abs() < RISE_TOLERANCE_K {
                 break;
             }
-            running_c = next;
+            running_c = secant.next(running_c, change_k).clamp(flow_c, highest_c);
             least = self.steady(cold, running_c, Wanted::Least, moisture);
         }
         (least, running_c, (wanted_kw / least.net_kw()).min(1.0))

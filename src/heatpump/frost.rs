@@ -14,7 +14,8 @@ pub const AIR_KJ_PER_KG_K: f64 = 1.006;
 /// How far the coil's surface stands towards the refrigerant, as a share of the approach. With 9 K of approach frost
 /// begins at about +5 °C, where it begins in maritime air (methods §9, common practice).
 pub const SURFACE_SHARE: f64 = 0.6;
-/// Below this surface temperature the whole coil frosts, °C; between it and 0 °C part of it stays wet. Common practice, no source.
+/// Below this surface temperature the whole coil frosts, °C; between it and 0 °C part of it stays wet: `x² (3 − 2x)` of it frosts at
+/// the share x of the way. Common practice, no source.
 pub const FULL_GROWTH_C: f64 = -4.0;
 /// Loss of output over loss of COP: the US test procedure's 35 °F point has capacity 0.90 and power 0.985 of the
 /// frost-free line, so COP 0.914 (methods §9, \[from memory\]).
@@ -54,6 +55,21 @@ pub struct FrostSteps {
     pub latent_share: f64,
     /// What it costs.
     pub loss: FrostLoss,
+}
+
+/// Outdoor temperature above which no coil freezes, °C: it would take an approach of 25 K.
+const FROST_FREE_C: f64 = 15.0;
+/// A coil with a largest approach up to this, K, is coldest at the air's own temperature; one beyond it might freeze in milder air yet,
+/// where a cool flow keeps the evaporator below the air.
+const USUAL_APPROACH_K: f64 = 16.0;
+
+/// Outdoor temperature above which a coil with a largest approach (K) stays above freezing, °C.
+pub fn frost_free_above_c(largest_approach_k: f64) -> f64 {
+    if largest_approach_k > USUAL_APPROACH_K {
+        FROST_FREE_C
+    } else {
+        SURFACE_SHARE * largest_approach_k
+    }
 }
 
 impl Frost {

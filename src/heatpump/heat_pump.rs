@@ -4,7 +4,7 @@ use std::sync::Arc;
 
 use super::correction::FittedMachine;
 use super::duty::{ColdSide, Duty};
-use super::frost::Frost;
+use super::frost::{Frost, frost_free_above_c};
 use super::idle::IdlePower;
 use super::limits::Limits;
 use super::map::Map;
@@ -45,6 +45,8 @@ pub(super) struct Core {
     pub greatest_current_a: Option<f64>,
     pub rated_condition: (f64, f64),
     pub rated_output_kw: f64,
+    /// Air warmer than this cannot frost the coil, °C.
+    pub frost_free_c: f64,
 }
 
 impl HeatPump {
@@ -58,7 +60,12 @@ impl HeatPump {
         let tested_kw = machine.machine.source_power_kw;
         let rated_condition = sheet.rated_condition();
         let (source_c, flow_c) = rated_condition;
+        let largest_approach_k = machine
+            .machine
+            .evaporator
+            .approach_k(map.greatest_output_kw());
         let core = Core {
+            frost_free_c: frost_free_above_c(largest_approach_k),
             label: sheet.label.clone(),
             typical: sheet.typical,
             source: sheet.source,

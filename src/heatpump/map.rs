@@ -66,50 +66,77 @@ impl Axis {
     }
 }
 
+/// A place in a map: the four nodes about a condition and their weights. An hour asks several outputs at one place.
+pub(super) struct Spot<'a> {
+    map: &'a Map,
+    nodes: [usize; 4],
+    weights: [f64; 4],
+}
+
+impl Spot<'_> {
+    /// Greatest and least output, kW.
+    pub fn range(&self) -> Range {
+        let mut range = Range {
+            greatest_kw: 0.0,
+            least_kw: 0.0,
+        };
+        for (&node, w) in self.nodes.iter().zip(self.weights) {
+            let at = self.map.ranges[node];
+            range.greatest_kw += w * at.greatest_kw;
+            range.least_kw += w * at.least_kw;
+        }
+        range
+    }
+
+    /// Input at a fraction of the way from least to greatest output.
+    pub fn input(&self, fraction: f64) -> Input {
+        let axis = &self.map.fraction;
+        let (k, x) = axis.place(fraction);
+        let next = usize::from(axis.count > 1);
+        let mut input = Input {
+            electric_per_heat: 0.0,
+            speed_share: 0.0,
+        };
+        for (&node, w) in self.nodes.iter().zip(self.weights) {
+            let at = node * axis.count + k;
+            let (low, high) = (self.map.inputs[at], self.map.inputs[at + next]);
+            let (below, above) = (w * (1.0 - x), w * x);
+            input.electric_per_heat +=
+                below * low.electric_per_heat + above * high.electric_per_heat;
+            input.speed_share += below * low.speed_share + above * high.speed_share;
+        }
+        input
+    }
+}
+
 impl Map {
-    /// Greatest and least output at a condition, kW.
-    pub fn range(&self, source_c: f64, flow_c: f64) -> Range {
+    /// A condition's place in the map, from which range and inputs are read.
+    pub(super) fn spot(&self, source_c: f64, flow_c: f64) -> Spot<'_> {
         let (i, s) = self.source.place(source_c);
         let (j, f) = self.flow.place(flow_c);
         let (di, dj) = self.strides();
         let at = i * self.flow.count + j;
-        let corner = |k: usize| self.ranges[at + k];
-        let (a, b, c, d) = (corner(0), corner(dj), corner(di), corner(di + dj));
-        let mix = |a: f64, b: f64, c: f64, d: f64| {
-            let (cold, warm) = (a + f * (b - a), c + f * (d - c));
-            cold + s * (warm - cold)
-        };
-        Range {
-            greatest_kw: mix(a.greatest_kw, b.greatest_kw, c.greatest_kw, d.greatest_kw),
-            least_kw: mix(a.least_kw, b.least_kw, c.least_kw, d.least_kw),
+        Spot {
+            map: self,
+            nodes: [at, at + dj, at + di, at + di + dj],
+            weights: [(1.0 - s) * (1.0 - f), (1.0 - s) * f, s * (1.0 - f), s * f],
         }
+    }
+
+    /// Greatest and least output at a condition, kW.
+    pub fn range(&self, source_c: f64, flow_c: f64) -> Range {
+        self.spot(source_c, flow_c).range()
     }
 
     /// Input at a fraction of the way from least to greatest output.
     pub fn input(&self, source_c: f64, flow_c: f64, fraction: f64) -> Input {
-        let (i, s) = self.source.place(source_c);
-        let (j, f) = self.flow.place(flow_c);
-        let (k, x) = self.fraction.place(fraction);
-        let (di, dj) = self.strides();
-        let dk = usize::from(self.fraction.count > 1);
-        let n = self.fraction.count;
-        let mut electric_per_heat = 0.0;
-        let mut speed_share = 0.0;
-        for (step_i, ws) in [(0, 1.0 - s), (di, s)] {
-            for (step_j, wf) in [(0, 1.0 - f), (dj, f)] {
-                let at = (i * self.flow.count + j + step_i + step_j) * n + k;
-                let (low, high) = (self.inputs[at], self.inputs[at + dk]);
-                let w = ws * wf;
-                electric_per_heat += w
-                    * (low.electric_per_heat
-                        + x * (high.electric_per_heat - low.electric_per_heat));
-                speed_share += w * (low.speed_share + x * (high.speed_share - low.speed_share));
-            }
-        }
-        Input {
-            electric_per_heat,
-            speed_share,
-        }
+        self.spot(source_c, flow_c).input(fraction)
+    }
+
+    /// Greatest output anywhere, kW.
+    pub(super) fn greatest_output_kw(&self) -> f64 {
+        let outputs = self.ranges.iter().map(|range| range.greatest_kw);
+        outputs.fold(0.0, f64::max)
     }
 
     /// Steps to the next source and the next flow node.

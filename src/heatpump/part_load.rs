@@ -34,7 +34,8 @@ pub fn starts_per_hour(share: f64) -> f64 {
 ///
 /// EN 14825 for hydronic machines, `COPbin = COP · CR/(Cc · CR + 1 − Cc)`, is the same as a loss of (1 − Cc) of the running power
 /// for the share of the time that the machine stands. The standard's coefficient holds the machine's thermostat-off power in that
-/// time: it is not to be charged besides. `running_kw` is its electricity while running.
+/// time: it is not to be charged besides. `running_kw` is its electricity while running as in the tested points: what a pump takes more at
+/// home, and frost, are no part of it.
 pub fn start_up_loss_kw(running_kw: f64, share: f64, cycling_coefficient: f64) -> f64 {
     (1.0 - cycling_coefficient) * running_kw * (1.0 - share.clamp(0.0, 1.0))
 }

@@ -71,7 +71,8 @@ pub struct RoomStep {
 /// practice, no source.
 pub const RECOVERY_H: f64 = 6.0;
 
-/// Rooms are aired from this much above the set point. Common practice, no source.
+/// Rooms are aired from this much above the set point, which keeps them from warming further but cools them neither below where they
+/// were nor below the outdoor air that does it. Common practice, no source.
 const AIRING_K: f64 = 3.0;
 
 impl Fabric {

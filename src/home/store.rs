@@ -58,9 +58,10 @@ pub struct Store {
     pub hysteresis_k: f64,
     /// Standing loss per kelvin above its surroundings, kW/K.
     pub loss_kw_per_k: f64,
-    /// Surroundings, °C.
+    /// Surroundings, °C; 20 where nothing else is known.
     pub surroundings_c: f64,
-    /// Flow above store temperature that its coil needs while charging, K.
+    /// Flow above store temperature that its coil needs while charging, K; 5 where nothing else is known. Flow minus return of a
+    /// block is the same.
     pub coil_k: f64,
     /// Clock hours in which a block may start.
     pub reheat: ClockHours,

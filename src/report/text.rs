@@ -255,7 +255,7 @@ fn assumptions(estimate: &Estimate, sources: bool) -> String {
 }
 
 pub(super) fn wrapped(text: &str, first: &str, others: &str) -> String {
-    // Said outright: otherwise another crate's features choose how lines are broken.
+    // Named, so that the text is the same with and without the PDF's line breaker in the build.
     let options = textwrap::Options::new(usize::from(WIDTH))
         .wrap_algorithm(textwrap::WrapAlgorithm::FirstFit)
         .initial_indent(first)
