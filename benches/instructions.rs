@@ -91,10 +91,10 @@ fn build_map(fitted: Fitted) -> Map {
 #[bench::one_year(setup = weather_bytes)]
 fn read_weather(bytes: Vec<u8>) -> usize {
     let weather = read_bytes("weather", black_box(&bytes), &ReadOptions::default()).unwrap();
-    weather.temperature_c.len()
+    weather.outdoor_c.len()
 }
 
-/// The hour loop alone: `year::run` into totals.
+// The hour loop alone: `year::run` into totals.
 #[library_benchmark]
 #[bench::boiler(args = (0), setup = system)]
 #[bench::air(args = (2), setup = system)]
@@ -115,7 +115,7 @@ fn loop_of_a_year((case, index): (Case, usize)) -> f64 {
     totals.all().space_wanted_kwh
 }
 
-/// With meters and bill.
+// With meters and bill.
 #[library_benchmark]
 #[bench::air(args = (2), setup = system)]
 fn metered_year((case, index): (Case, usize)) -> usize {

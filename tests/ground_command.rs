@@ -57,11 +57,12 @@ fn the_json_has_the_promised_shape_and_the_ground_grows_colder() {
     // What was not looked for is absent.
     assert!(first.get("sizing").is_none());
     let short = &first["others"][0];
-    assert!(short["years"][4]["hours_stopped"].as_u64().unwrap() > 20);
+    // A machine with an inverter turns down to what the bore bears before it stops.
+    assert!(short["years"][4]["hours_turned_down"].as_u64().unwrap() > 20);
     assert!(short["years"][4]["backup_kwh"].as_f64().unwrap() > 20.0);
     let told = short["findings"][0]["what"].as_str().unwrap();
     assert!(
-        told.contains("stands in") && told.contains("backup"),
+        told.contains("is turned down in") && told.contains("backup"),
         "{told}"
     );
 }
@@ -117,4 +118,38 @@ fn pictures_are_written_once_for_each_ground_source() {
         Some(3),
         "nothing is overwritten unasked"
     );
+}
+
+/// A comparison shows year 15 of a buried loop, says so, and sets its first year beside it.
+#[test]
+fn a_comparison_shows_a_later_year_and_the_first_beside_it() {
+    let estimate = |format: &str| {
+        let output = Command::cargo_bin("winterledger")
+            .unwrap()
+            .current_dir(Path::new(env!("CARGO_MANIFEST_DIR")))
+            .args(["estimate", "briefs/ground.toml", "--format", format])
+            .output()
+            .unwrap();
+        assert!(output.status.success(), "{output:?}");
+        String::from_utf8(output.stdout).unwrap()
+    };
+    let result: serde_json::Value = serde_json::from_str(&estimate("json")).unwrap();
+    let systems = result["systems"].as_array().unwrap();
+    let of = |label: &str| systems.iter().find(|one| one["label"] == label).unwrap();
+    let bore = of("One bore, right-sized");
+    let shown = &bore["ground"];
+    assert_eq!(shown["shown_year"], 15);
+    let number = |value: &serde_json::Value| value.as_f64().unwrap();
+    assert!(number(&shown["first_year_cost"]) < number(&bore["cost"]));
+    assert!(number(&shown["first_year_spf_h4"]) > number(&bore["spf_h4"]));
+    assert!(number(&shown["first_year_lowest_brine_c"]) > number(&shown["lowest_brine_c"]));
+    assert!(of("Air source").get("ground").is_none());
+    let text = estimate("text");
+    for words in [
+        "Year of the loop shown",
+        "cost in its year 1",
+        "lowest in year 1",
+    ] {
+        assert!(text.contains(words), "{words}");
+    }
 }

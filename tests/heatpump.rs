@@ -253,6 +253,56 @@ fn a_brine_that_falls_too_low_stops_the_machine() {
     assert_eq!(m.fitted.heat_pump.greatest_output_kw(&exhausted, 40.0), 0.0);
 }
 
+/// A real machine with an inverter does not stop while turning down would do: it draws what lets the brine enter at its limit,
+/// open − k × drawn, by hand.
+#[test]
+fn a_brine_near_its_limit_turns_the_machine_down() {
+    let m = machine("ground, R410A, variable speed");
+    let pump = &m.fitted.heat_pump;
+    let cold = ColdSide {
+        open_c: 0.0,
+        k_per_kw: 1.6,
+        relative_humidity: None,
+    };
+    // The sheet's lowest is −8 °C, so 5 kW may be drawn; at full output it would draw about 7.
+    let got = pump.deliver(&cold, &steady(9.0, 40.0));
+    assert!(got.flags.turned_down && got.flags.short && !got.flags.stopped && !got.flags.cycling);
+    assert!((got.extracted_kwh - 5.0).abs() < 1e-6, "{got:?}");
+    assert!((got.source_c + 8.0).abs() < 1e-9);
+    assert!((pump.greatest_output_kw(&cold, 40.0) - got.heat_kwh).abs() < 1e-6);
+    // What it does not want to give it is not turned down from.
+    assert!(!pump.deliver(&cold, &steady(3.0, 40.0)).flags.turned_down);
+    // No step at the limit: a hair more resistance takes a hair of heat.
+    let other = ColdSide {
+        k_per_kw: 1.6001,
+        ..cold
+    };
+    let next = pump.deliver(&other, &steady(9.0, 40.0));
+    assert!((next.heat_kwh / got.heat_kwh - 1.0).abs() < 1e-3);
+    // A block of hot water takes longer.
+    let block = Duty {
+        at_full_output: true,
+        ..steady(3.0, 50.0)
+    };
+    let slow = pump.deliver(
+        &ColdSide {
+            k_per_kw: 2.2,
+            ..cold
+        },
+        &block,
+    );
+    assert!(
+        slow.flags.turned_down && (slow.heat_kwh - 3.0).abs() < 1e-9 && slow.running_hours < 1.0
+    );
+    // Where even the least is too much, it stands.
+    let exhausted = ColdSide {
+        k_per_kw: 8.0,
+        ..cold
+    };
+    let none = pump.deliver(&exhausted, &steady(9.0, 40.0));
+    assert!(none.flags.stopped && none.heat_kwh == 0.0);
+}
+
 /// The allowance is a component of its own that makes electricity 1/0.85 of the laboratory's (Ruhnau et al. 2019).
 #[test]
 fn the_allowance_stands_apart() {

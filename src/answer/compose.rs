@@ -322,6 +322,7 @@ fn ground_shown(
         shown_year: aged.year,
         lowest_brine_c: lowest(outcome),
         hours_stopped: outcome.mean(|year| f64::from(year.hours_stopped)),
+        hours_turned_down: outcome.mean(|year| f64::from(year.hours_turned_down)),
         first_year_cost: first.costs.total,
         first_year_spf_h4: first.mean_sums().spf_h4(),
         first_year_lowest_brine_c: lowest(&first),
@@ -374,13 +375,14 @@ fn source_too_cold(system: &SystemAnswer) -> Option<Finding> {
     let ground = system
         .ground
         .as_ref()
-        .filter(|ground| ground.hours_stopped >= 0.5)?;
+        .filter(|ground| ground.hours_stopped + ground.hours_turned_down >= 0.5)?;
     Some(Finding::new(
         Severity::Caution,
         format!(
-            "the machine of \"{}\" stands in {:.0} hours of year {} of its loop because the brine is too cold for it; backup and immersion heater use {:.0} kWh",
+            "the machine of \"{}\" stands in {:.0} hours and is turned down in {:.0} hours of year {} of its loop because the brine is too cold for it; backup and immersion heater use {:.0} kWh",
             system.label,
             ground.hours_stopped,
+            ground.hours_turned_down,
             ground.shown_year,
             system.backup_kwh.unwrap_or(0.0),
         ),

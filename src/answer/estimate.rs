@@ -248,6 +248,8 @@ pub struct GroundShown {
     pub lowest_brine_c: Option<f64>,
     /// Hours in which the machine stood because its source was outside its limits.
     pub hours_stopped: f64,
+    /// Hours in which it was turned down so that the brine would not fall below its limit.
+    pub hours_turned_down: f64,
     /// Cost in the first year of its life.
     pub first_year_cost: f64,
     /// Seasonal performance factor with all auxiliaries in the first year.

@@ -93,6 +93,8 @@ pub struct GroundYear {
     pub backup_kwh: f64,
     /// Hours in which the machine stood because its source was outside its limits.
     pub hours_stopped: u32,
+    /// Hours in which it was turned down so that its source would not fall below its limit.
+    pub hours_turned_down: u32,
     /// Hours with backup or immersion heater.
     pub hours_backup: u32,
     /// Hours that ended short of heat.
@@ -258,6 +260,7 @@ fn year_answer(year: &LoopYear) -> GroundYear {
         electricity_kwh: year.sums.electricity_kwh(),
         backup_kwh: year.sums.backup_kwh + year.sums.immersion_kwh,
         hours_stopped: year.hours_stopped,
+        hours_turned_down: year.hours_turned_down,
         hours_backup: year.hours_backup,
         hours_short: year.hours_short,
         hours_wall_frozen: year.hours_wall_frozen,
@@ -330,13 +333,16 @@ fn sizing(machine: &MachineSystem, buried: &BuriedLoop, found: &ShortestLoop) ->
 /// What a life tells: a loop too short, brine or soil that freezes.
 fn life_findings(machine: &MachineSystem, life: &[LoopYear], label: &str) -> Vec<Finding> {
     let mut findings = Vec::new();
-    let worst = life.iter().max_by_key(|year| year.hours_stopped);
-    if let Some(year) = worst.filter(|year| year.hours_stopped > 0) {
+    let worst = life
+        .iter()
+        .max_by_key(|year| year.hours_stopped + year.hours_turned_down);
+    if let Some(year) = worst.filter(|year| year.hours_stopped + year.hours_turned_down > 0) {
         findings.push(Finding::new(
             Severity::Caution,
             format!(
-                "the machine of \"{label}\" stands in {} hours of year {} because its source falls below {:.1} °C; backup and immersion heater use {:.0} kWh in that year",
+                "the machine of \"{label}\" stands in {} hours and is turned down in {} hours of year {}, or its source would fall below {:.1} °C; backup and immersion heater use {:.0} kWh in that year",
                 year.hours_stopped,
+                year.hours_turned_down,
                 year.year,
                 machine.machine.limits().lowest_source_c,
                 year.sums.backup_kwh + year.sums.immersion_kwh

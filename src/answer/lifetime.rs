@@ -47,6 +47,8 @@ pub struct SystemLifetime {
     pub cost_per_kwh_heat: Option<f64>,
     /// Carbon of all years.
     pub carbon_kg: f64,
+    /// Whether each year has figures of its own, because the ground of its loop cools; else all years are the one that is shown.
+    pub each_year_its_own: bool,
     /// Year 0 is today; what a year costs stands at its end.
     pub by_year: Vec<LifetimeYear>,
 }
@@ -109,6 +111,7 @@ pub(super) fn lifetime(case: &Case, outcomes: &[Outcome]) -> Option<LifetimeAnsw
                 &outlay,
                 flow,
                 (!contender.today).then_some(today),
+                contender.life.is_some(),
             ))
         })
         .collect();
@@ -125,6 +128,7 @@ fn system(
     outlay: &Outlay,
     flow: &CashFlow,
     today: Option<&CashFlow>,
+    each_year_its_own: bool,
 ) -> SystemLifetime {
     let paid_back = today.map(|today| payback(flow, today));
     let so_far = flow.spent_so_far();
@@ -148,6 +152,7 @@ fn system(
         }),
         cost_per_kwh_heat: flow.cost_per_kwh_heat(),
         carbon_kg: flow.carbon_kg(),
+        each_year_its_own,
         by_year: flow
             .years
             .iter()

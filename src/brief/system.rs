@@ -189,6 +189,7 @@ pub(super) fn contender(
             outlay: outlay?,
             shown_year: shown_year?,
             aged: None,
+            life: None,
         },
         machine,
         rooms: warm.rooms,

@@ -219,6 +219,9 @@ fn draw_cycle(scene: &mut Scene, frame: &Frame, data: &PressureEnthalpy) {
     }
 }
 
+/// Distance of the condensing line from the top of the dome that its name and that of the critical point need between them.
+const ROOM_BELOW_DOME: f64 = 56.0;
+
 fn label_phases(
     scene: &mut Scene,
     frame: &Frame,
@@ -240,9 +243,22 @@ fn label_phases(
     let set = Type::new(SMALL + 1.0, Weight::Regular, NAVY);
     let condensing = format!("condensing {}", temperature(data.condensing_c));
     let (x, y) = level(f64::max, 0.0);
-    let places: Vec<_> = [-10.0, 22.0, -24.0, 36.0]
-        .map(|dy| ((x, y + dy), Anchor::Middle))
-        .into();
+    // Condensing near the critical point, the top of the dome and its name fill the room above the line.
+    let top_y = data
+        .dome
+        .iter()
+        .map(|point| frame.at(point.0, point.1).1)
+        .fold(f64::INFINITY, f64::min);
+    let places: Vec<_> = if y - top_y < ROOM_BELOW_DOME {
+        // Beside the middle as well, where the line of dry vapour comes down through it.
+        [0.0, -25.0, -45.0, -65.0]
+            .map(|dx| ((x + dx, y + 22.0), Anchor::Middle))
+            .into()
+    } else {
+        [-10.0, 22.0, -24.0, 36.0]
+            .map(|dy| ((x, y + dy), Anchor::Middle))
+            .into()
+    };
     scene.place(&frame.area, &condensing, &places, set);
     let evaporating = format!("evaporating {}", temperature(data.evaporating_c));
     let (x, y) = level(f64::min, f64::INFINITY);

@@ -2,9 +2,9 @@
 
 use std::path::{Path, PathBuf};
 
-use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
+use super::{Failure, Format, NewFile, picture_file, print, print_json, warn, write_files};
 use crate::answer::cycle::CycleAnswer;
-use crate::chart::{ChartError, Marks, PressureEnthalpy, StatePoint, pressure_enthalpy};
+use crate::chart::{Marks, PressureEnthalpy, StatePoint, pressure_enthalpy};
 use crate::heatpump::cycle::{Cycle, CycleInputs, Diagram, DiagramPoint};
 use crate::problem::{Place, Problem, Problems, Severity};
 use crate::refrigerant::{Equation, Refrigerant, UnknownRefrigerant};
@@ -152,24 +152,7 @@ fn picture(cycle: &Cycle, equation: &Equation, path: &Path) -> Result<NewFile, F
         condensing_c: cycle.inputs.condensing_c,
         cop_heating: Some(cycle.cop_heating()),
     };
-    let undrawn = |error: ChartError| Failure::Write {
-        path: path.to_owned(),
-        reason: error.to_string(),
-    };
-    let drawn = pressure_enthalpy(&data, &Marks::default()).map_err(undrawn)?;
-    let extension = path.extension().map(|found| found.to_ascii_lowercase());
-    let content = match extension.as_deref().and_then(|found| found.to_str()) {
-        Some("svg") => drawn.svg().map_err(undrawn)?.into_bytes(),
-        Some("png") => drawn.png().map_err(undrawn)?,
-        _ => {
-            return Err(Failure::argument(
-                "--chart",
-                path.display().to_string(),
-                "a file that ends in .svg or .png",
-            ));
-        }
-    };
-    Ok(NewFile::new(path, content))
+    picture_file("--chart", path, pressure_enthalpy(&data, &Marks::default()))
 }
 
 fn text(cycle: &Cycle) -> String {

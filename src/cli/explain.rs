@@ -40,7 +40,7 @@ struct Which {
     /// The coldest hour outdoors.
     #[arg(long)]
     coldest: bool,
-    /// The hour in which the machine did worst.
+    /// The hour in which the machine did worst, of those with at least a tenth of the design heat load.
     #[arg(long)]
     worst_cop: bool,
     /// The hour whose energy cost most.

@@ -7,6 +7,7 @@ use std::path::{Path, PathBuf};
 use tempfile::NamedTempFile;
 
 use super::Failure;
+use crate::chart::{ChartError, Picture};
 
 /// A file to be written.
 #[derive(Debug)]
@@ -84,6 +85,35 @@ fn readable(file: &NamedTempFile) -> std::io::Result<()> {
 #[cfg(not(unix))]
 fn readable(_: &NamedTempFile) -> std::io::Result<()> {
     Ok(())
+}
+
+/// A picture as a file, SVG or PNG by its ending; `option` is the argument that named it.
+///
+/// # Errors
+/// [`Failure::Write`] when it cannot be drawn, a refused argument for another ending.
+pub fn picture_file(
+    option: &str,
+    path: &Path,
+    picture: Result<Picture, ChartError>,
+) -> Result<NewFile, Failure> {
+    let undrawn = |error: ChartError| Failure::Write {
+        path: path.to_owned(),
+        reason: error.to_string(),
+    };
+    let ending = path.extension().map(|found| found.to_ascii_lowercase());
+    let picture = picture.map_err(undrawn)?;
+    let content = match ending.as_deref().and_then(|found| found.to_str()) {
+        Some("svg") => picture.svg().map_err(undrawn)?.into_bytes(),
+        Some("png") => picture.png().map_err(undrawn)?,
+        _ => {
+            return Err(Failure::argument(
+                option,
+                path.display().to_string(),
+                "a file that ends in .svg or .png",
+            ));
+        }
+    };
+    Ok(NewFile::new(path, content))
 }
 
 /// Makes a folder where there is none and tries to write into it, so that a refusal comes before the long work.

@@ -2,13 +2,12 @@
 
 use std::path::{Path, PathBuf};
 
-use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
+use super::{Failure, Format, NewFile, picture_file, print, print_json, warn, write_files};
 use crate::answer::ground::ground_answer;
 use crate::brief::Brief;
 use crate::calendar::HOURS_PER_LEAP_YEAR;
 use crate::chart::{
-    BrineLife, BrineLine, BrineYear, ChartError, Marks, Picture, brine_life, brine_year,
-    calendar_months,
+    BrineLife, BrineLine, BrineYear, Marks, brine_life, brine_year, calendar_months,
 };
 use crate::report::ground_text;
 use crate::source::Source;
@@ -216,7 +215,7 @@ fn year_picture(
         undisturbed_c,
         limit: limit(contender),
     };
-    written(path, brine_year(&data, &Marks::default()))
+    picture_file("--chart", path, brine_year(&data, &Marks::default()))
 }
 
 fn life_picture(path: &Path, contender: &Contender, life: &[LoopYear]) -> Result<NewFile, Failure> {
@@ -243,7 +242,7 @@ fn life_picture(path: &Path, contender: &Contender, life: &[LoopYear]) -> Result
         lines,
         limit: limit(contender),
     };
-    written(path, brine_life(&data, &Marks::default()))
+    picture_file("--chart", path, brine_life(&data, &Marks::default()))
 }
 
 /// The lowest source temperature that the machine accepts.
@@ -254,27 +253,6 @@ fn limit(contender: &Contender) -> Option<(String, f64)> {
             machine.machine.limits().lowest_source_c,
         )
     })
-}
-
-/// A picture as a file, SVG or PNG by its ending.
-fn written(path: &Path, picture: Result<Picture, ChartError>) -> Result<NewFile, Failure> {
-    let is_png = path
-        .extension()
-        .is_some_and(|ending| ending.eq_ignore_ascii_case("png"));
-    let content = picture.and_then(|picture| {
-        if is_png {
-            picture.png()
-        } else {
-            picture.svg().map(String::into_bytes)
-        }
-    });
-    match content {
-        Ok(content) => Ok(NewFile::new(path, content)),
-        Err(error) => Err(Failure::Write {
-            path: path.to_owned(),
-            reason: error.to_string(),
-        }),
-    }
 }
 
 /// The path of a picture, numbered when there are several.

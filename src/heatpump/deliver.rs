@@ -18,7 +18,8 @@ const ENOUGH: f64 = 1e-9;
 impl HeatPump {
     /// What the machine does with an hour.
     ///
-    /// Outside its limits it stands, or gives what it can below its highest flow temperature. Between its least and greatest
+    /// Outside its limits it stands, or gives what it can below its highest flow temperature. Where what it draws would bring the
+    /// source below its lowest, it turns down to what the source bears, and stands when that is less than its least. Between its least and greatest
     /// output it runs all the time at the heat wanted; below it goes on and off at a hotter flow; a block at full output runs
     /// until it is done. Frost (outdoor air only) follows coil temperature and humidity; without humidity the air is that of the
     /// standard rating conditions.
@@ -48,7 +49,7 @@ impl HeatPump {
             Wanted::Net(wanted_kw)
         };
         let steady = self.steady(cold, flow_c, wanted, moisture);
-        let (steady, flow_c, share) = match steady.held {
+        let (mut steady, flow_c, mut share) = match steady.held {
             Held::Between => (steady, flow_c, 1.0),
             Held::AtLeast => self.on_and_off(steady, cold, duty, wanted_kw, flow_c, moisture),
             Held::AtGreatest => {
@@ -57,8 +58,14 @@ impl HeatPump {
             }
         };
         if steady.source_c < core.limits.lowest_source_c {
-            flags.stopped = true;
-            return Delivered::standing(flags);
+            let Some(held) = self.turned_down(cold, flow_c, moisture) else {
+                flags.stopped = true;
+                return Delivered::standing(flags);
+            };
+            flags.turned_down = true;
+            flags.short = wanted_kw > held.net_kw() * (1.0 + ENOUGH);
+            share = (wanted_kw / held.net_kw()).min(1.0);
+            steady = held;
         }
         flags.cycling = share < 1.0 && !duty.at_full_output;
         flags.frosting = steady.loss.cop > 0.0;
@@ -73,10 +80,11 @@ impl HeatPump {
             return 0.0;
         }
         let steady = self.steady(cold, flow_c, Wanted::Greatest, self.moisture(cold));
-        if steady.source_c < limits.lowest_source_c {
-            return 0.0;
+        if steady.source_c >= limits.lowest_source_c {
+            return steady.net_kw() * self.scale;
         }
-        steady.net_kw() * self.scale
+        self.turned_down(cold, flow_c, self.moisture(cold))
+            .map_or(0.0, |held| held.net_kw() * self.scale)
     }
 
     /// Least heat that it gives without going on and off, kW, frost deducted.

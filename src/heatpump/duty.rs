@@ -33,6 +33,8 @@ pub struct Flags {
     pub capped_flow: bool,
     /// The source is outside the machine's limits: it stood.
     pub stopped: bool,
+    /// It gave less than it could, so that its source would not fall below its lowest.
+    pub turned_down: bool,
     /// Less was wanted than its least output: it went on and off.
     pub cycling: bool,
     /// More was wanted than it can give.

@@ -8,20 +8,20 @@
 use crate::air::{MoistAir, SEA_LEVEL_PA};
 
 /// Heat of sublimation of ice at 0 °C, kJ/kg (handbook value 2834).
-const SUBLIMATION_KJ_PER_KG: f64 = 2834.0;
+pub const SUBLIMATION_KJ_PER_KG: f64 = 2834.0;
 /// Specific heat of moist air, kJ/(kg K); handbook value.
-const AIR_KJ_PER_KG_K: f64 = 1.006;
+pub const AIR_KJ_PER_KG_K: f64 = 1.006;
 /// How far the coil's surface stands towards the refrigerant, as a share of the approach. With 9 K of approach frost
 /// begins at about +5 °C, where it begins in maritime air (methods §9, common practice).
-const SURFACE_SHARE: f64 = 0.6;
+pub const SURFACE_SHARE: f64 = 0.6;
 /// Below this surface temperature the whole coil frosts, °C; between it and 0 °C part of it stays wet: `x² (3 − 2x)` of it frosts at
 /// the share x of the way. Common practice, no source.
-const FULL_GROWTH_C: f64 = -4.0;
+pub const FULL_GROWTH_C: f64 = -4.0;
 /// Loss of output over loss of COP: the US test procedure's 35 °F point has capacity 0.90 and power 0.985 of the
 /// frost-free line, so COP 0.914 (methods §9, \[from memory\]).
-const OUTPUT_OVER_COP: f64 = 0.100 / 0.086;
+pub const OUTPUT_OVER_COP: f64 = 0.100 / 0.086;
 /// Largest loss of COP, a share: a coil that frosts faster than this defrosts out of turn.
-const GREATEST_LOSS: f64 = 0.35;
+pub const GREATEST_LOSS: f64 = 0.35;
 /// Wet-bulb depression of the standard rating conditions of outdoor air, K: 7(6), 2(1), −7(−8) °C dry (wet) bulb (EN 14511,
 /// methods §1). It stands in where the weather has no humidity.
 const STANDARD_DEPRESSION_K: f64 = 1.0;
@@ -42,6 +42,21 @@ pub struct FrostLoss {
     pub cop: f64,
 }
 
+/// How a loss came about.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct FrostSteps {
+    /// Coil's surface, °C.
+    pub surface_c: f64,
+    /// Humidity ratio of air saturated over ice at the surface, kg/kg.
+    pub surface_humidity_ratio: f64,
+    /// Share of the coil that frosts instead of staying wet, 0..1.
+    pub frosted_share: f64,
+    /// Share of the heat taken from the air that is heat of sublimation, 0..1.
+    pub latent_share: f64,
+    /// What it costs.
+    pub loss: FrostLoss,
+}
+
 /// Outdoor temperature above which no coil freezes, °C: it would take an approach of 25 K.
 const FROST_FREE_C: f64 = 15.0;
 /// A coil with a largest approach up to this, K, is coldest at the air's own temperature; one beyond it might freeze in milder air yet,
@@ -60,30 +75,58 @@ pub fn frost_free_above_c(largest_approach_k: f64) -> f64 {
 impl Frost {
     /// Loss at an outdoor temperature, an evaporating temperature and a humidity ratio of the outdoor air (kg/kg).
     pub fn loss(&self, outdoor_c: f64, evaporating_c: f64, humidity_ratio: f64) -> FrostLoss {
-        let surface_c = outdoor_c - SURFACE_SHARE * (outdoor_c - evaporating_c);
+        let surface_c = surface_c(outdoor_c, evaporating_c);
         if surface_c >= 0.0 {
             return FrostLoss::default();
         }
-        let ramp = (surface_c / FULL_GROWTH_C).min(1.0);
-        let grown = ramp * ramp * (3.0 - 2.0 * ramp);
-        let cop = (self.strength * grown * latent_share(outdoor_c, surface_c, humidity_ratio))
-            .min(GREATEST_LOSS);
-        FrostLoss {
-            output: cop * OUTPUT_OVER_COP,
-            cop,
+        self.growth(outdoor_c, surface_c, humidity_ratio).loss
+    }
+
+    /// The same with what leads to it.
+    pub fn steps(&self, outdoor_c: f64, evaporating_c: f64, humidity_ratio: f64) -> FrostSteps {
+        self.growth(
+            outdoor_c,
+            surface_c(outdoor_c, evaporating_c),
+            humidity_ratio,
+        )
+    }
+
+    fn growth(&self, outdoor_c: f64, surface_c: f64, humidity_ratio: f64) -> FrostSteps {
+        let ramp = (surface_c / FULL_GROWTH_C).clamp(0.0, 1.0);
+        let frosted_share = ramp * ramp * (3.0 - 2.0 * ramp);
+        let surface_humidity_ratio = saturated_humidity_ratio(surface_c);
+        let latent_share = latent_share(
+            outdoor_c - surface_c,
+            humidity_ratio - surface_humidity_ratio,
+        );
+        let cop = (self.strength * frosted_share * latent_share).min(GREATEST_LOSS);
+        FrostSteps {
+            surface_c,
+            surface_humidity_ratio,
+            frosted_share,
+            latent_share,
+            loss: FrostLoss {
+                output: cop * OUTPUT_OVER_COP,
+                cop,
+            },
         }
     }
 }
 
-/// Share of the heat taken from the air that is heat of sublimation, 0..1, when air cools towards a surface below freezing:
-/// `r Δw / (cp ΔT + r Δw)`, heat and moisture going the same way (Lewis number 1, textbook).
-fn latent_share(outdoor_c: f64, surface_c: f64, humidity_ratio: f64) -> f64 {
-    let deposited = humidity_ratio - saturated_humidity_ratio(surface_c);
+/// Temperature of the coil's surface, °C.
+fn surface_c(outdoor_c: f64, evaporating_c: f64) -> f64 {
+    outdoor_c - SURFACE_SHARE * (outdoor_c - evaporating_c)
+}
+
+/// Share of the heat taken from the air that is heat of sublimation, 0..1, when air cools towards a surface below freezing by
+/// `cooling_k` and leaves `deposited` (kg/kg) on it: `r Δw / (cp ΔT + r Δw)`, heat and moisture going the same way (Lewis number 1,
+/// textbook).
+fn latent_share(cooling_k: f64, deposited: f64) -> f64 {
     if deposited <= 0.0 {
         return 0.0;
     }
     let latent = SUBLIMATION_KJ_PER_KG * deposited;
-    latent / (latent + AIR_KJ_PER_KG_K * (outdoor_c - surface_c))
+    latent / (latent + AIR_KJ_PER_KG_K * cooling_k)
 }
 
 /// Humidity ratio of outdoor air, kg/kg, from its temperature and, where there is one, its relative humidity (0..1, over liquid

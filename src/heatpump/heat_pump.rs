@@ -94,6 +94,11 @@ impl HeatPump {
         }
     }
 
+    /// Electricity of the source's side at home over that of the tested points, at least 1.
+    pub fn source_side_factor(&self) -> f64 {
+        self.source_side_factor
+    }
+
     /// The same machine at another size: its greatest output at A7/W35, B0/W35 or W10/W35 becomes `rated_output_kw`. Everything
     /// per kilowatt stays, so temperatures and COP at the same share of output stay too.
     pub fn scaled_to(&self, rated_output_kw: f64) -> Self {

@@ -13,6 +13,8 @@ const MOST_FROST_STEPS: usize = 12;
 const DRAW_TOLERANCE_K: f64 = 1e-6;
 /// Most steps of that balance: the last half of them halve the bracket, which is enough from any bracket in use.
 const MOST_DRAW_STEPS: usize = 80;
+/// Halvings of the range of output when the machine is turned down: 1e-9 of it is left.
+const TURN_DOWN_HALVINGS: usize = 30;
 /// At what output the machine is asked to run.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) enum Wanted {
@@ -134,6 +136,38 @@ impl HeatPump {
             }
         }
         steady
+    }
+
+    /// The machine turned down until what it draws lets the source enter at its lowest; nothing where even its least output
+    /// draws more than that, or where nothing it draws cools the source.
+    pub(super) fn turned_down(
+        &self,
+        cold: &ColdSide,
+        flow_c: f64,
+        moisture: f64,
+    ) -> Option<Steady> {
+        let lowest_c = self.core.limits.lowest_source_c;
+        let k_per_kw = cold.k_per_kw * self.scale;
+        if k_per_kw <= 0.0 {
+            return None;
+        }
+        let bearable_kw = (cold.open_c - lowest_c) / k_per_kw;
+        let at = |wanted| self.steady_at(lowest_c, flow_c, wanted, moisture);
+        let (least, greatest) = (at(Wanted::Least), at(Wanted::Greatest));
+        if greatest.extracted_kw <= bearable_kw {
+            return Some(greatest);
+        }
+        let mut held = least;
+        let (mut low_kw, mut high_kw) = (least.net_kw(), greatest.net_kw());
+        for _ in 0..TURN_DOWN_HALVINGS {
+            let middle = at(Wanted::Net(0.5 * (low_kw + high_kw)));
+            if middle.extracted_kw <= bearable_kw {
+                (low_kw, held) = (middle.net_kw(), middle);
+            } else {
+                high_kw = middle.net_kw();
+            }
+        }
+        (held.extracted_kw <= bearable_kw).then_some(held)
     }
 
     /// The machine at an entering source temperature, by the map.

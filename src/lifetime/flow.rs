@@ -18,6 +18,33 @@ pub struct Running {
     pub heat_kwh: f64,
 }
 
+impl Running {
+    /// The same in another year, known by what a system of its kind uses in that year and in the one that this is: everything in
+    /// proportion.
+    #[must_use]
+    pub fn as_in(&self, other: &Self, this: &Self) -> Self {
+        // What is not used in one year is not used in another.
+        let times = |own: f64, other: f64, this: f64| {
+            if this == 0.0 { own } else { own * other / this }
+        };
+        Self {
+            electricity: times(self.electricity, other.electricity, this.electricity),
+            fuel: times(self.fuel, other.fuel, this.fuel),
+            electricity_carbon_kg: times(
+                self.electricity_carbon_kg,
+                other.electricity_carbon_kg,
+                this.electricity_carbon_kg,
+            ),
+            fuel_carbon_kg: times(
+                self.fuel_carbon_kg,
+                other.fuel_carbon_kg,
+                this.fuel_carbon_kg,
+            ),
+            heat_kwh: times(self.heat_kwh, other.heat_kwh, this.heat_kwh),
+        }
+    }
+}
+
 /// What is paid at the end of one year; year 0 is today.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]
 pub struct YearFlow {
@@ -58,8 +85,13 @@ pub struct CashFlow {
 }
 
 impl CashFlow {
-    /// Lays out the years. Beyond the end of a given price path its last value holds; [`Terms::check`] refuses such terms.
+    /// Lays out the years, all alike. Beyond the end of a given price path its last value holds; [`Terms::check`] refuses such terms.
     pub fn of(terms: &Terms, outlay: &Outlay, running: &Running) -> Self {
+        Self::by_year(terms, outlay, |_| *running)
+    }
+
+    /// The same where each year (from 1) has figures of its own, such as those of a loop whose ground cools.
+    pub fn by_year(terms: &Terms, outlay: &Outlay, running_in: impl Fn(usize) -> Running) -> Self {
         let last = terms.years;
         let mut held = [1.0; 3];
         let years = (0..=last).map(|year| {
@@ -82,6 +114,7 @@ impl CashFlow {
             for (held, path) in held.iter_mut().zip(paths) {
                 *held = path.at(year).unwrap_or(*held);
             }
+            let running = running_in(year);
             flow.maintenance = outlay.maintenance;
             flow.electricity = running.electricity * held[0];
             flow.fuel = running.fuel * held[1];

@@ -73,6 +73,7 @@ fn table(answer: &GroundAnswer) -> String {
             format!("{:.0}", y.backup_kwh)
         }),
         row("Hours the machine stood", &|y| y.hours_stopped.to_string()),
+        row("  was turned down", &|y| y.hours_turned_down.to_string()),
     ];
     // A source without walls has no row for them.
     let rows = rows

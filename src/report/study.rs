@@ -2,7 +2,7 @@
 
 use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
-use crate::answer::lifetime::LifetimeAnswer;
+use crate::answer::lifetime::{LifetimeAnswer, LifetimeYear, SystemLifetime};
 use crate::answer::study::{ChoiceStudy, EmitterAnswer, SizesAnswer, StudyAnswer, SwingAnswer};
 use crate::answer::{LeverAnswer, short};
 
@@ -183,6 +183,20 @@ fn swings_text(swings: &[SwingAnswer], currency: &str) -> String {
     )
 }
 
+/// What the first and the last year of a loop that cools its ground cost to run.
+fn own_years(system: &SystemLifetime) -> Option<String> {
+    let bill = |year: &LifetimeYear| year.electricity + year.fuel;
+    let (first, last) = (system.by_year.get(1)?, system.by_year.last()?);
+    let sentence = format!(
+        "{} costs each year its own, as its ground cools: {:.0} to run in year 1, {:.0} in year {}.",
+        system.label,
+        bill(first),
+        bill(last),
+        last.year,
+    );
+    Some(format!("\n{}", wrapped(&sentence, "", "  ")))
+}
+
 fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
     let names = lifetime.systems.iter().map(|system| {
         if system.today {
@@ -197,9 +211,7 @@ fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
         row
     };
     let systems = &lifetime.systems;
-    let all = |figure: fn(&crate::answer::lifetime::SystemLifetime) -> String| {
-        systems.iter().map(figure).collect()
-    };
+    let all = |figure: fn(&SystemLifetime) -> String| systems.iter().map(figure).collect();
     let rows = vec![
         row(
             "Paid at the beginning",
@@ -245,8 +257,10 @@ fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
         std::iter::once(currency.to_owned()).chain(names),
         rows,
     );
+    let cooling = systems.iter().filter(|system| system.each_year_its_own);
+    let cooling: String = cooling.filter_map(own_years).collect();
     format!(
-        "{}\n{table}",
+        "{}\n{table}{cooling}",
         wrapped(&format!("Over the years: {}", lifetime.terms), "", "  ")
     )
 }

@@ -203,6 +203,11 @@ const LINES: &[Line] = &[
     ("  machine stood, h", |s| {
         s.ground.as_ref().map(|g| format!("{:.0}", g.hours_stopped))
     }),
+    ("  turned down, h", |s| {
+        s.ground
+            .as_ref()
+            .map(|g| format!("{:.0}", g.hours_turned_down))
+    }),
     ("Hours with backup", |s| {
         s.backup_kwh.map(|_| format!("{:.0}", s.hours_backup))
     }),

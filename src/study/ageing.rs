@@ -1,7 +1,10 @@
 //! The years of a buried loop: what earlier ones leave behind, and each year of its life.
 
+use std::sync::Arc;
+
 use super::case::{Case, Contender};
 use crate::fault::{self, Fault};
+use crate::lifetime::Running;
 use crate::source::{BuriedLoop, Memory, Source};
 use crate::year::{MachineSystem, Row, Sink, State, run};
 
@@ -110,13 +113,27 @@ impl Contender {
 }
 
 impl Case {
-    /// Ages the ground of every system that has such, so that its run shows a year of its life.
+    /// Ages the ground of every system that has such, so that its run shows a year of its life; where its outlay is known, each year
+    /// of that life is counted as well.
     pub fn age_grounds(&mut self) {
         for i in 0..self.contenders.len() {
             let year = self.contenders[i].shown_year;
             let aged = self.aged(&self.contenders[i], year);
             self.contenders[i].aged = aged;
+            self.contenders[i].life = self.life(&self.contenders[i]);
         }
+    }
+
+    /// What a system uses in each year of its life; nothing where its years are all alike or nobody asks what they cost together.
+    pub(super) fn life(&self, contender: &Contender) -> Option<Arc<[Running]>> {
+        contender.remembering()?;
+        contender
+            .outlay
+            .as_ref()
+            .filter(|outlay| !outlay.parts.is_empty())?;
+        let years = self.terms.years.max(contender.shown_year as usize);
+        // A bill that cannot be made is told when the case is run.
+        self.yearly_running(contender, years).ok().map(Arc::from)
     }
 
     /// The ground of a system as it is at the beginning of a year of its life, from 1; nothing when it has none that remembers.

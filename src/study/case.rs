@@ -13,7 +13,7 @@ use super::price::price;
 use crate::bill::Connection;
 use crate::carbon::Leakage;
 use crate::home::Pattern;
-use crate::lifetime::{Outlay, Terms};
+use crate::lifetime::{Outlay, Running, Terms};
 use crate::plan::{Ability, ShiftRule};
 use crate::problem::Problems;
 use crate::source::Memory;
@@ -114,6 +114,8 @@ pub struct Contender {
     pub shown_year: u32,
     /// The ground at the beginning of that year, see [`Case::age_grounds`]; nothing for fresh ground or none.
     pub aged: Option<Aged>,
+    /// What it uses in each year of its life from fresh ground, where it draws on ground that remembers and its outlay is known.
+    pub life: Option<Arc<[Running]>>,
 }
 
 impl Case {
@@ -249,6 +251,7 @@ impl Case {
         {
             let year = contenders[*of].shown_year;
             contenders[*of].aged = brief.aged(&contenders[*of], year);
+            contenders[*of].life = brief.life(&contenders[*of]);
         }
         self.contenders = contenders;
         self.moved = (!values.is_empty()).then_some(Moved { before, values });
@@ -303,27 +306,29 @@ impl Case {
         Ok(self.run_through(contender, ground, ledger)?.0)
     }
 
-    /// Cost of each year of a system's life from fresh ground, the weather's years in their order again and again: a buried loop costs
-    /// more to run year after year, everything else repeats itself.
+    /// What a system uses in each year of its life from fresh ground, the weather's years in their order again and again: a buried loop
+    /// takes more year after year, everything else repeats itself. Several years of weather stand for their mean.
     ///
     /// # Errors
     /// When a bill cannot be made.
-    pub fn yearly_costs(&self, contender: &Contender, years: usize) -> Result<Vec<f64>, Problems> {
-        let mut costs = Vec::with_capacity(years + self.years().len());
+    pub fn yearly_running(
+        &self,
+        contender: &Contender,
+        years: usize,
+    ) -> Result<Vec<Running>, Problems> {
+        let alike = match contender.remembering() {
+            Some(_) => self.years().len().max(1),
+            None => years,
+        };
+        let mut all = Vec::with_capacity(years + alike);
         let mut ground = Memory::default();
-        for _ in 0..years {
-            if costs.len() >= years {
-                break;
-            }
+        while all.len() < years {
             let (outcome, after) = self.run_through(contender, ground, None)?;
-            costs.extend(outcome.costs.by_year);
-            if contender.remembering().is_none() {
-                costs = costs.iter().copied().cycle().take(years).collect();
-            }
+            all.extend(std::iter::repeat_n(outcome.running(), alike));
             ground = after;
         }
-        costs.truncate(years);
-        Ok(costs)
+        all.truncate(years);
+        Ok(all)
     }
 
     /// Runs one system through the years that are run; gives what the ground remembers at the end beside the outcome.

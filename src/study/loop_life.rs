@@ -43,6 +43,8 @@ pub struct LoopYear {
     pub hours_wall_frozen: u32,
     /// Hours in which the machine stood because its source was outside its limits.
     pub hours_stopped: u32,
+    /// Hours in which it was turned down so that its source would not fall below its limit.
+    pub hours_turned_down: u32,
     /// Hours in which backup or immersion heater ran.
     pub hours_backup: u32,
     /// Hours that ended short of heat.
@@ -71,6 +73,7 @@ impl Tally {
             lowest_wall_c: None,
             hours_wall_frozen: 0,
             hours_stopped: 0,
+            hours_turned_down: 0,
             hours_backup: 0,
             hours_short: 0,
             greatest_draw_kw: 0.0,
@@ -107,6 +110,7 @@ impl Tally {
             year.hours_wall_frozen += u32::from(wall_c < 0.0);
         }
         year.hours_stopped += u32::from(row.flags.has(Flags::MACHINE_STOPPED));
+        year.hours_turned_down += u32::from(row.flags.has(Flags::TURNED_DOWN));
         year.hours_backup +=
             u32::from(row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION));
         year.hours_short += u32::from(row.flags.has(Flags::SHORT));
@@ -212,7 +216,7 @@ pub enum NoShortest {
 }
 
 /// Searches the shortest loop that keeps the brine entering the machine at or above a floor (°C) through a year of its life, with
-/// the machine never standing for want of source.
+/// the machine never standing or turned down for want of source.
 ///
 /// The number of bores or trenches, their places and the flow stay; their length changes. Each trial lets the ground settle to the
 /// history that its own draws make; the loop that is found is then gone through from fresh ground, year by year, as every other.
@@ -291,7 +295,7 @@ fn with_length(
     Ok(contender)
 }
 
-/// Coldest brine entering in a year of the settled ground; nothing when the machine stands for want of source.
+/// Coldest brine entering in a year of the settled ground; nothing when the machine stands or turns down for want of source.
 fn coldest_settled(case: &Case, contender: &Contender, year: u32) -> Option<f64> {
     let machine = contender.remembering()?;
     let memory = settled(case, contender, year)?;
@@ -309,7 +313,7 @@ fn coldest_settled(case: &Case, contender: &Contender, year: u32) -> Option<f64>
         &mut state,
         &mut |_, _, _| {},
     );
-    if lived.hours_stopped > 0 {
+    if lived.hours_stopped + lived.hours_turned_down > 0 {
         None
     } else {
         lived.coldest.map(|coldest| coldest.entering_c)

@@ -63,6 +63,8 @@ pub struct YearOutcome {
     pub hours_water_short: u32,
     /// Hours in which the machine stood because its source was outside its limits.
     pub hours_stopped: u32,
+    /// Hours in which it was turned down so that its source would not fall below its limit.
+    pub hours_turned_down: u32,
     /// Lowest temperature of air, brine or water entering the machine, °C; infinite when it never ran.
     pub min_source_c: f64,
 }
@@ -81,6 +83,7 @@ impl YearOutcome {
             hours_short: totals.hours_short,
             hours_water_short: totals.hours_water_short,
             hours_stopped: totals.hours_stopped,
+            hours_turned_down: totals.hours_turned_down,
             min_source_c: totals.min_source_c,
         }
     }

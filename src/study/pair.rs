@@ -150,6 +150,9 @@ impl Compared {
 
 /// The years of a contender's life. Today's system is there already, so it needs no outlay; a choice without one has no
 /// lifetime cost.
+///
+/// A buried loop has figures of its own in each year. They were counted for the system as the brief has it; where a lever moved it,
+/// every year moves in proportion to the one that is shown.
 pub fn cash_flow(case: &Case, contender: usize, outcome: &Outcome) -> Option<CashFlow> {
     let own = case.contenders.get(contender)?;
     let outlay = match &own.outlay {
@@ -157,5 +160,13 @@ pub fn cash_flow(case: &Case, contender: usize, outcome: &Outcome) -> Option<Cas
         None if own.today => crate::lifetime::Outlay::default(),
         _ => return None,
     };
-    Some(CashFlow::of(&case.terms, &outlay, &outcome.running()))
+    let shown = outcome.running();
+    let Some(life) = own.life.as_deref().filter(|life| !life.is_empty()) else {
+        return Some(CashFlow::of(&case.terms, &outlay, &shown));
+    };
+    let year_of_life = |year: usize| &life[year.clamp(1, life.len()) - 1];
+    let as_shown = year_of_life(own.shown_year as usize);
+    Some(CashFlow::by_year(&case.terms, &outlay, |year| {
+        shown.as_in(year_of_life(year), as_shown)
+    }))
 }

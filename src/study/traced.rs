@@ -14,11 +14,15 @@ pub enum Wanted {
     Hour(usize),
     /// The coldest outdoors.
     Coldest,
-    /// The one in which the machine did worst for the rooms, or for hot water where it never heats rooms.
+    /// The one in which the machine did worst for the rooms, or for hot water where it never heats rooms. Hours in which it gave less
+    /// than [`WORTH_LOOKING_AT`] do not count: a few minutes' run in June has the worst COP of all and matters to nobody.
     WorstCop,
     /// The one that cost most.
     Dearest,
 }
+
+/// Heat of the machine below which an hour's COP is not looked at, as a share of the design heat load. A choice of ours.
+pub const WORTH_LOOKING_AT: f64 = 0.1;
 
 /// An hour of one system with the duties of its machine.
 #[derive(Debug, Clone)]
@@ -130,10 +134,15 @@ fn unsolved(contender: &Contender, error: &dyn std::fmt::Display) -> Problems {
 fn chosen(case: &Case, contender: &Contender, wanted: Wanted) -> Result<usize, Problems> {
     let mut ledger = Ledger::with_capacity(case.site.outdoor_c.len());
     case.run_one(contender, Some(&mut ledger))?;
+    let least_kwh = WORTH_LOOKING_AT * contender.design_load_kw;
     // The smallest of a figure; the dearest hour is the one of the smallest negative cost.
     let figure = |row: &Row| match wanted {
         Wanted::Coldest | Wanted::Hour(_) => Some(row.outdoor_c),
-        Wanted::WorstCop => row.space_cop.or(row.water_cop),
+        Wanted::WorstCop => {
+            let worth = |heat_kwh: f64| heat_kwh >= least_kwh;
+            let rooms = row.space_cop.filter(|_| worth(row.machine_space_kwh));
+            rooms.or(row.water_cop.filter(|_| worth(row.machine_water_kwh)))
+        }
         Wanted::Dearest => Some(-row.energy_cost),
     };
     let hours = ledger.rows.iter().enumerate();

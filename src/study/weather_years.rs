@@ -104,6 +104,7 @@ mod tests {
                 hours_short: 0,
                 hours_water_short: 0,
                 hours_stopped: 0,
+                hours_turned_down: 0,
                 min_source_c: f64::INFINITY,
             },
         }

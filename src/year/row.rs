@@ -161,6 +161,8 @@ flags! {
     HYGIENE = 11, "hygiene cycle";
     /// The control's flow carried less heat than was wanted.
     FLOW_TOO_COOL = 12, "flow set too cool";
+    /// The machine gave less than it could, so that its source would not fall below its limit.
+    TURNED_DOWN = 13, "turned down for its source";
 }
 
 impl Flags {

@@ -455,6 +455,7 @@ fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
     row.flags |= Flags::CYCLING.when(delivered.flags.cycling)
         | Flags::FLOW_CAPPED.when(delivered.flags.capped_flow)
         | Flags::MACHINE_STOPPED.when(delivered.flags.stopped)
+        | Flags::TURNED_DOWN.when(delivered.flags.turned_down)
         | Flags::AT_GREATEST_OUTPUT.when(delivered.flags.short)
         | Flags::FROSTING.when(delivered.flags.frosting);
     delivered.compressor_kwh

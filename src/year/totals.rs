@@ -23,6 +23,8 @@ pub struct Totals<'a> {
     pub hours_water_short: u32,
     /// Hours in which the machine stood because its source was outside its limits.
     pub hours_stopped: u32,
+    /// Hours in which it was turned down so that its source would not fall below its limit.
+    pub hours_turned_down: u32,
     /// Lowest temperature of air, brine or water entering the machine, °C; infinite when it never ran.
     pub min_source_c: f64,
 }
@@ -40,6 +42,7 @@ impl<'a> Totals<'a> {
             hours_short: 0,
             hours_water_short: 0,
             hours_stopped: 0,
+            hours_turned_down: 0,
             min_source_c: f64::INFINITY,
         }
     }
@@ -65,6 +68,7 @@ impl Sink for Totals<'_> {
         self.hours_short += u32::from(row.flags.has(Flags::SHORT));
         self.hours_water_short += u32::from(row.flags.has(Flags::WATER_SHORT));
         self.hours_stopped += u32::from(row.flags.has(Flags::MACHINE_STOPPED));
+        self.hours_turned_down += u32::from(row.flags.has(Flags::TURNED_DOWN));
         self.min_source_c = self.min_source_c.min(row.source_c.unwrap_or(f64::INFINITY));
     }
 }

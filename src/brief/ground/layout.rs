@@ -20,6 +20,7 @@ pub(super) fn filling(
 ) -> Option<Filling> {
     let table = ground.table.borehole.as_deref();
     let (no_conductivity, no_length) = (None, None);
+    one_u_tube(ground, check)?;
     if let Some(table) = table
         && let Some(leaf) = &table.resistance
     {
@@ -50,6 +51,34 @@ pub(super) fn filling(
         w_per_m_k: grout?.w_per_m_k(),
         spacing_m: spacing.map(|s| s.m()),
     })
+}
+
+/// Refuses two U-tubes in a bore unless what would have to be reckoned from them is given: the formula for the resistance is that of
+/// one, and so is the pressure drop.
+fn one_u_tube(ground: &Ground<'_>, check: &mut Check) -> Option<()> {
+    let Some(table) = ground.table.borehole.as_deref() else {
+        return Some(());
+    };
+    let Some(leaf) = &table.u_tubes else {
+        return Some(());
+    };
+    let tubes = check.value(&table.u_tubes)?;
+    let given = table.resistance.is_some()
+        && ground
+            .table
+            .brine
+            .as_deref()
+            .is_some_and(|brine| brine.pump.is_some());
+    if tubes == 1 || (tubes == 2 && given) {
+        return Some(());
+    }
+    check.refuse(
+        &leaf.span(),
+        format!("{tubes} U-tubes in a bore"),
+        "1, or 2 with borehole.resistance and brine.pump given: only one U-tube is reckoned from its parts",
+        "give the resistance and the pump's power from the driller or from a thermal response test, or leave u_tubes out",
+    );
+    None
 }
 
 pub(super) fn bores(
