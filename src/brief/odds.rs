@@ -187,16 +187,16 @@ pub(super) fn said(raw: &raw::Brief, check: &mut Check) -> Said {
     said
 }
 
+/// How the text of a range's field is read.
+type Reading<'a> = &'a dyn Fn(&str) -> Result<f64, UnitProblem>;
+
 impl Said {
     fn add(
         &mut self,
         lever: Lever,
         choice: usize,
         table: &Option<Section<RangeTable>>,
-        (value, deviation): (
-            &dyn Fn(&str) -> Result<f64, UnitProblem>,
-            &dyn Fn(&str) -> Result<f64, UnitProblem>,
-        ),
+        (value, deviation): (Reading<'_>, Reading<'_>),
         check: &mut Check,
     ) {
         let Some(table) = table else { return };

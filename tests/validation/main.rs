@@ -32,7 +32,10 @@ mod seeded;
 use table::Row;
 
 /// What the page is made of, in its order.
-const ROOMS: &[(&str, fn() -> Vec<Row>)] = &[
+/// A room and its rows.
+type Room = (&'static str, fn() -> Vec<Row>);
+
+const ROOMS: &[Room] = &[
     ("Units and fuels", units::rows),
     ("Moist air", air::rows),
     ("Refrigerants", refrigerant::rows),

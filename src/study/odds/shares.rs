@@ -1,5 +1,7 @@
 //! Which lever made the spread: first-order shares of the variance from the sample that is there.
 
+use nalgebra::{DMatrix, DVector};
+
 /// The share of the spread that knowing one quantity would take away.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct SpreadShare {
@@ -125,41 +127,23 @@ fn without_the_others(rows: &[usize], x: &[Vec<f64>], y: &[f64], quantity: usize
     calmed
 }
 
-/// Slopes of values on columns, all centred, by the normal equations (Gaussian elimination with the greatest pivot); nothing where
-/// columns depend on one another. The columns are shares of one, so that the equations are well scaled.
+/// Slopes of values on columns, all centred, by the normal equations; nothing where columns depend on one another. The columns are
+/// shares of one, so that the equations are well scaled.
 fn least_squares(columns: &[Vec<f64>], values: &[f64]) -> Option<Vec<f64>> {
-    /// A pivot below this part of the greatest diagonal is none.
-    const LEAST_PIVOT: f64 = 1e-9;
-    let product = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(a, b)| a * b).sum::<f64>();
-    let size = columns.len();
-    let mut rows: Vec<Vec<f64>> = columns
-        .iter()
-        .map(|one| {
-            let mut row: Vec<f64> = columns.iter().map(|other| product(one, other)).collect();
-            row.push(product(one, values));
-            row
-        })
-        .collect();
-    let greatest = (0..size).map(|i| rows[i][i]).fold(0.0, f64::max);
-    for i in 0..size {
-        let pivot = (i..size).max_by(|&a, &b| rows[a][i].abs().total_cmp(&rows[b][i].abs()))?;
-        rows.swap(i, pivot);
-        if rows[i][i].abs() <= LEAST_PIVOT * greatest {
-            return None;
-        }
-        for other in i + 1..size {
-            let factor = rows[other][i] / rows[i][i];
-            for column in i..=size {
-                rows[other][column] -= factor * rows[i][column];
-            }
-        }
+    /// A singular value below this part of the greatest is none.
+    const LEAST: f64 = 1e-9;
+    let x = DMatrix::from_fn(values.len(), columns.len(), |row, column| {
+        columns[column][row]
+    });
+    let parts = x.tr_mul(&x).svd(true, true);
+    let least = LEAST * parts.singular_values.max();
+    if parts.rank(least) < columns.len() {
+        return None;
     }
-    let mut slopes = vec![0.0; size];
-    for i in (0..size).rev() {
-        let known: f64 = (i + 1..size).map(|j| rows[i][j] * slopes[j]).sum();
-        slopes[i] = (rows[i][size] - known) / rows[i][i];
-    }
-    Some(slopes)
+    let slopes = parts
+        .solve(&x.tr_mul(&DVector::from_column_slice(values)), least)
+        .ok()?;
+    Some(slopes.as_slice().to_vec())
 }
 
 #[cfg(test)]
