@@ -56,7 +56,7 @@ const BEFORE_ITEM: f64 = 2.6;
 /// Widest line of running text, points: some 85 signs.
 const MEASURE: f64 = 410.0;
 /// Tallest picture of the first page and of the others, points.
-const TALLEST_FIRST: f64 = 205.0;
+const TALLEST_FIRST: f64 = 172.0;
 const TALLEST: f64 = 430.0;
 /// Widest share of the column that a picture takes.
 const WIDEST: f64 = 0.97;
