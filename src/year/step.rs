@@ -10,7 +10,7 @@ use super::site::{Plan, Site};
 use super::system::{Heating, MachineSystem, State, System};
 use crate::calendar::CivilHour;
 use crate::heater::Boiler;
-use crate::heatpump::{ColdSide, Delivered, Duty};
+use crate::heatpump::{ColdSide, Delivered, Duty, running_spread_k};
 use crate::home::{Control, Home, StoreStep, Tapped, WaterTemperatures};
 
 /// Rooms this much below the set point at the end of an hour are short of heat, K. A choice of ours: about what people notice.
@@ -379,11 +379,13 @@ fn throttled_k(home: &Home, rooms: &Rooms, heat_kw: f64) -> f64 {
     }
 }
 
-/// Flow minus return while the machine runs: the design water flow carries the heat of the running time.
+/// Flow minus return while the machine runs: the design water flow carries the heat of the running time, held to what pump and
+/// machine allow.
 fn delivered_spread_k(duty: &Duty, delivered: &Delivered) -> f64 {
-    let mean_kw = duty.heat_kw * duty.hours;
-    if mean_kw > 0.0 && delivered.running_hours > 0.0 {
-        duty.spread_k * (delivered.heat_kwh / delivered.running_hours) / duty.heat_kw
+    let asked_kwh = duty.heat_kw * duty.hours;
+    if asked_kwh > 0.0 && delivered.running_hours > 0.0 {
+        let mean_spread_k = duty.spread_k * delivered.heat_kwh / asked_kwh;
+        running_spread_k(mean_spread_k, delivered.running_hours / duty.hours)
     } else {
         duty.spread_k
     }
