@@ -3,6 +3,7 @@
 use chrono::NaiveDate;
 
 use super::rows::{HEADING, Row, columns, row, unreadable};
+use crate::limits::check_lines;
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
 use crate::units::{CalorificBasis, CalorificValue, Fuel, FuelUnit};
 
@@ -64,6 +65,10 @@ impl Readings {
             .from_reader(text.as_bytes());
         let mut problems = Problems::new();
         let place = Place::file(name);
+        check_lines(text).map_err(|beyond| {
+            let place = place.clone().at_line(beyond.line.unwrap_or(0));
+            Problem::new(place, beyond.found, beyond.allowed, "")
+        })?;
         if first.trim().is_empty() {
             return Err(Problem::new(place, "no line of headings", HEADING, "").into());
         }
@@ -327,6 +332,13 @@ mod tests {
             (readings.intervals[1].to - readings.intervals[1].from).num_days(),
             14
         );
+    }
+
+    #[test]
+    fn an_endless_line_is_refused() {
+        let text = format!("date,register (kWh)\n2023-01-01,{}\n", "1".repeat(70_000));
+        let problem = read(&text).unwrap_err();
+        assert!(problem.to_string().contains("at most 64 KiB"), "{problem}");
     }
 
     #[test]

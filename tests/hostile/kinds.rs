@@ -4,6 +4,7 @@ use std::cell::RefCell;
 use std::fmt::Write as _;
 use std::io::Write as _;
 use std::path::Path;
+use std::sync::OnceLock;
 
 use rust_decimal::prelude::ToPrimitive;
 use winterledger::bill::{self, Connection};
@@ -28,60 +29,75 @@ pub struct Kind {
     pub name: &'static str,
     pub ending: &'static str,
     pub form: Form,
-    /// Real examples.
-    pub seeds: fn() -> Vec<Vec<u8>>,
+    /// Makes real examples.
+    begin: fn() -> Vec<Vec<u8>>,
+    held: OnceLock<Vec<Vec<u8>>>,
     /// Whether it was read; an error is a failure, a refusal is none.
     pub read: fn(&[u8]) -> Result<bool, String>,
 }
 
-pub const KINDS: &[Kind] = &[
+impl Kind {
+    /// Real examples.
+    pub fn seeds(&self) -> &[Vec<u8>] {
+        self.held.get_or_init(self.begin)
+    }
+}
+
+pub static KINDS: [Kind; 7] = [
     Kind {
         name: "brief",
         ending: "toml",
         form: Form::Toml,
-        seeds: briefs,
+        begin: briefs,
+        held: OnceLock::new(),
         read: brief,
     },
     Kind {
         name: "sheet",
         ending: "toml",
         form: Form::Toml,
-        seeds: sheets,
+        begin: sheets,
+        held: OnceLock::new(),
         read: sheet,
     },
     Kind {
         name: "tariff",
         ending: "toml",
         form: Form::Toml,
-        seeds: tariffs,
+        begin: tariffs,
+        held: OnceLock::new(),
         read: tariff,
     },
     Kind {
         name: "weather",
         ending: "csv",
         form: Form::Csv,
-        seeds: weathers,
+        begin: weathers,
+        held: OnceLock::new(),
         read: weather,
     },
     Kind {
         name: "readings",
         ending: "csv",
         form: Form::Csv,
-        seeds: readings,
+        begin: readings,
+        held: OnceLock::new(),
         read: meter_readings,
     },
     Kind {
         name: "prices",
         ending: "csv",
         form: Form::Csv,
-        seeds: prices,
+        begin: prices,
+        held: OnceLock::new(),
         read: price_series,
     },
     Kind {
         name: "packed",
         ending: "csv.gz",
         form: Form::Packed,
-        seeds: packed,
+        begin: packed,
+        held: OnceLock::new(),
         read: weather,
     },
 ];

@@ -149,8 +149,7 @@ pub fn mutated(random: &mut Random, kind: &Kind) -> Vec<u8> {
         packed.write_all(&mutated(random, plain)).unwrap();
         return packed.finish().unwrap();
     }
-    let seeds = (kind.seeds)();
-    let seed = random.pick(&seeds).clone();
+    let seed = random.pick(kind.seeds()).clone();
     if kind.form == Form::Packed {
         let mut bytes = seed;
         for _ in 0..=random.below(4) {
@@ -160,9 +159,18 @@ pub fn mutated(random: &mut Random, kind: &Kind) -> Vec<u8> {
     }
     let text = String::from_utf8_lossy(&seed).into_owned();
     let mut lines: Vec<String> = text.lines().map(str::to_owned).collect();
+    // Half of them gently, so that many are read and what is behind the door is tried too.
+    let gently = random.below(2) == 0;
     let rounds = 1 + random.below(5);
     for _ in 0..rounds {
-        change(random, kind.form, &mut lines);
+        if gently {
+            nudge(random, &mut lines);
+        } else {
+            change(random, kind.form, &mut lines);
+        }
+    }
+    if gently {
+        return (lines.join("\n") + "\n").into_bytes();
     }
     let end = *random.pick(&["\n", "\n", "\n", "\n", "\r\n", "\r"]);
     let mut bytes = lines.join(end).into_bytes();
@@ -217,6 +225,26 @@ fn change(random: &mut Random, form: Form, lines: &mut Vec<String>) {
     }
 }
 
+/// A change after which most texts can still be read: another number of its size or a line less.
+fn nudge(random: &mut Random, lines: &mut Vec<String>) {
+    if lines.is_empty() {
+        return;
+    }
+    let at = random.below(lines.len());
+    if random.below(8) == 0 {
+        lines.remove(at);
+        return;
+    }
+    if let Some(place) = number_within(random, &lines[at]) {
+        let held: f64 = lines[at][place.clone()].parse().unwrap_or(1.0);
+        let digits = lines[at][place.clone()]
+            .split_once('.')
+            .map_or(0, |(_, after)| after.len());
+        let factor = *random.pick(&[0.0, 0.5, 0.8, 0.95, 1.05, 1.25, 2.0, 5.0]);
+        lines[at].replace_range(place, &format!("{:.digits$}", held * factor));
+    }
+}
+
 /// Replaces one value of a line: the part behind an equals sign, a field of a table, or a number within.
 fn value(random: &mut Random, form: Form, line: &mut String) {
     let edge = *random.pick(EDGES);
@@ -240,8 +268,8 @@ fn value(random: &mut Random, form: Form, line: &mut String) {
     }
 }
 
-/// Puts another number in place of one of a line, its unit kept.
-fn number(random: &mut Random, line: &mut String) {
+/// Where one of a line's numbers stands.
+fn number_within(random: &mut Random, line: &str) -> Option<std::ops::Range<usize>> {
     let starts: Vec<usize> = line
         .char_indices()
         .filter(|&(i, c)| {
@@ -249,25 +277,32 @@ fn number(random: &mut Random, line: &mut String) {
         })
         .map(|(i, _)| i)
         .collect();
-    let Some(&start) = starts.get(random.below(starts.len())) else {
-        return;
-    };
+    let &start = starts.get(random.below(starts.len()))?;
     let length = line[start..]
         .find(|c: char| !c.is_ascii_digit() && c != '.')
         .unwrap_or(line.len() - start);
+    Some(start..start + length)
+}
+
+/// Puts another number in place of one of a line, its unit kept.
+fn number(random: &mut Random, line: &mut String) {
+    let Some(place) = number_within(random, line) else {
+        return;
+    };
+    let held = &line[place.clone()];
     let new = match random.below(8) {
         0 => "0".to_owned(),
-        1 => format!("-{}", &line[start..start + length]),
+        1 => format!("-{held}"),
         2 => "1e300".to_owned(),
         3 => "nan".to_owned(),
         4 => "1e-300".to_owned(),
         _ => {
-            let held: f64 = line[start..start + length].parse().unwrap_or(1.0);
+            let held: f64 = held.parse().unwrap_or(1.0);
             let factor = *random.pick(&[0.001, 0.1, 0.5, 0.9, 1.1, 2.0, 10.0, 1000.0]);
             format!("{}", held * factor)
         }
     };
-    line.replace_range(start..start + length, &new);
+    line.replace_range(place, &new);
 }
 
 fn boundary(line: &str, random: &mut Random) -> usize {
