@@ -13,6 +13,16 @@ pub struct Locale {
     pub paper: Paper,
 }
 
+impl Locale {
+    /// The same for a page as wide as a phone.
+    pub fn on_a_phone(self) -> Self {
+        Self {
+            marks: self.marks.on_a_phone(),
+            ..self
+        }
+    }
+}
+
 /// Order of a date.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
 pub enum DateOrder {
@@ -88,6 +98,8 @@ pub struct Marks {
     pub decimal: char,
     /// Between thousands; none for none.
     pub thousands: Option<char>,
+    /// Whether what is written must fit a page as wide as a phone; pictures are then drawn narrow.
+    pub phone: bool,
 }
 
 impl Default for Marks {
@@ -96,11 +108,20 @@ impl Default for Marks {
         Self {
             decimal: '.',
             thousands: Some(','),
+            phone: false,
         }
     }
 }
 
 impl Marks {
+    /// The same marks for a page as wide as a phone.
+    pub fn on_a_phone(self) -> Self {
+        Self {
+            phone: true,
+            ..self
+        }
+    }
+
     /// `value` with so many decimals, a true minus sign, and no minus before a zero.
     pub fn number(&self, value: f64, decimals: usize) -> String {
         if !value.is_finite() {
@@ -126,6 +147,27 @@ impl Marks {
             out.push_str(fraction);
         }
         out
+    }
+
+    /// One figure written with a decimal point, perhaps with a sign before and a unit behind, in the marks of the place.
+    pub fn grouped(&self, figure: &str) -> String {
+        let start = figure.find(|c: char| c.is_ascii_digit()).unwrap_or(0);
+        let (sign, rest) = figure.split_at(start);
+        let end = rest
+            .find(|c: char| !c.is_ascii_digit())
+            .unwrap_or(rest.len());
+        let (whole, tail) = rest.split_at(end);
+        match whole.parse::<u32>() {
+            Ok(whole) => {
+                let whole = self.number(f64::from(whole), 0);
+                let tail = match tail.strip_prefix('.') {
+                    Some(fraction) => format!("{}{fraction}", self.decimal),
+                    None => tail.to_owned(),
+                };
+                format!("{sign}{whole}{tail}")
+            }
+            Err(_) => self.localized(figure),
+        }
     }
 
     /// A sentence written with decimal points, with the mark of the place instead of each point between two digits.
@@ -221,12 +263,14 @@ mod tests {
         let de = Marks {
             decimal: ',',
             thousands: Some('.'),
+            phone: false,
         };
         assert_eq!(de.number(12345.6, 1), "12.345,6");
         assert_eq!(
             Marks {
                 decimal: '.',
-                thousands: None
+                thousands: None,
+                phone: false,
             }
             .number(12345.6, 0),
             "12346"
@@ -234,10 +278,24 @@ mod tests {
     }
 
     #[test]
+    fn a_figure_takes_both_marks_of_the_place() {
+        let de = Marks {
+            decimal: ',',
+            thousands: Some('.'),
+            phone: false,
+        };
+        assert_eq!(de.grouped("+12345.6 °C"), "+12.345,6 °C");
+        assert_eq!(de.grouped("below the record"), "below the record");
+        assert_eq!(Marks::default().grouped("-1486"), "-1,486");
+        assert_eq!(Marks::default().grouped("80 %"), "80 %");
+    }
+
+    #[test]
     fn a_sentence_takes_the_mark_of_the_place() {
         let de = Marks {
             decimal: ',',
             thousands: Some('.'),
+            phone: false,
         };
         let sentence = "electricity 0.5 % dearer (25.43 ct/kWh). 3 hours.";
         assert_eq!(
