@@ -174,7 +174,13 @@ fn draw_months(scene: &mut Scene, frame: &Frame, data: &BrineYear, days: f64) {
             1.0,
         );
         let room = frame.at_x(end) - x - 3.0;
-        if room > 14.0 {
+        let initial: String = name.chars().take(1).collect();
+        let (name, least) = if scene.narrow() {
+            (&initial, 11.0)
+        } else {
+            (name, 14.0)
+        };
+        if room > least {
             let name = font::fit(name, SMALL, Weight::Regular, room);
             scene.tick(
                 &name,

@@ -149,7 +149,11 @@ pub fn energy_flow(data: &EnergyFlow, marks: &Marks) -> Result<Picture, ChartErr
     let set = Type::new(BODY, Weight::Bold, INK);
     let name = font::fit(named(&data.heater), set.size, set.weight, 260.0);
     let above = (nodes[1] + NODE / 2.0, heater[0].1 - 10.0);
-    scene.text(&name, above, Anchor::Middle, set);
+    if scene.narrow() {
+        scene.plate(&name, above, Anchor::Middle, set);
+    } else {
+        scene.text(&name, above, Anchor::Middle, set);
+    }
     Ok(Picture::new(title, alt(data, &sides, marks), scene))
 }
 

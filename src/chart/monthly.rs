@@ -160,11 +160,15 @@ fn check(data: &Monthly) -> Result<(), ChartError> {
 }
 
 fn panel(data: &Monthly, left: f64, right: f64, top: f64, axis: &Axis) -> Frame {
+    /// Narrowest panel in which every month has its letter, points.
+    const ALL_MONTHS: f64 = 220.0;
     let n = data.months.len() as f64;
+    let every = if right - left < ALL_MONTHS { 3 } else { 1 };
     let names = data
         .months
         .iter()
         .enumerate()
+        .step_by(every)
         .map(|(i, m)| (i as f64, m.clone()))
         .collect();
     let mut frame = Frame::inside(

@@ -12,7 +12,7 @@ use super::palette::{Colour, Dash, Hatch, Mark, Series, WHITE};
 /// Width of every picture in points; heights follow the content. At 180 mm on paper a point is 0.25 mm.
 pub const WIDTH: f64 = 720.0;
 /// Width of the canvas for a page as wide as a phone: letters stay as large, so there is less room beside them.
-pub const PHONE_WIDTH: f64 = 400.0;
+pub const PHONE_WIDTH: f64 = 390.0;
 /// Free margin around everything.
 pub(crate) const MARGIN: f64 = 18.0;
 
