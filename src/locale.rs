@@ -149,27 +149,6 @@ impl Marks {
         out
     }
 
-    /// One figure written with a decimal point, perhaps with a sign before and a unit behind, in the marks of the place.
-    pub fn grouped(&self, figure: &str) -> String {
-        let start = figure.find(|c: char| c.is_ascii_digit()).unwrap_or(0);
-        let (sign, rest) = figure.split_at(start);
-        let end = rest
-            .find(|c: char| !c.is_ascii_digit())
-            .unwrap_or(rest.len());
-        let (whole, tail) = rest.split_at(end);
-        match whole.parse::<u32>() {
-            Ok(whole) => {
-                let whole = self.number(f64::from(whole), 0);
-                let tail = match tail.strip_prefix('.') {
-                    Some(fraction) => format!("{}{fraction}", self.decimal),
-                    None => tail.to_owned(),
-                };
-                format!("{sign}{whole}{tail}")
-            }
-            Err(_) => self.localized(figure),
-        }
-    }
-
     /// A sentence written with decimal points, with the mark of the place instead of each point between two digits.
     pub fn localized(&self, sentence: &str) -> String {
         if self.decimal == '.' {
@@ -275,19 +254,6 @@ mod tests {
             .number(12345.6, 0),
             "12346"
         );
-    }
-
-    #[test]
-    fn a_figure_takes_both_marks_of_the_place() {
-        let de = Marks {
-            decimal: ',',
-            thousands: Some('.'),
-            phone: false,
-        };
-        assert_eq!(de.grouped("+12345.6 °C"), "+12.345,6 °C");
-        assert_eq!(de.grouped("below the record"), "below the record");
-        assert_eq!(Marks::default().grouped("-1486"), "-1,486");
-        assert_eq!(Marks::default().grouped("80 %"), "80 %");
     }
 
     #[test]

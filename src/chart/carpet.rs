@@ -73,10 +73,7 @@ pub fn carpet(data: &Carpet, marks: &Marks) -> Result<Picture, ChartError> {
     let missing = data.hours.iter().filter(|h| h.is_none()).count();
     let mut subtitle = format!("{}, one column a day, one row an hour.", data.quantity);
     if missing > 0 {
-        subtitle += &format!(
-            " White: {} that the clock or the file leaves out.",
-            marks.count(missing, "hour")
-        );
+        subtitle += &format!(" White: {} without a value.", marks.count(missing, "hour"));
     }
     let below = scene.heading(&data.title, &subtitle);
     let key_bottom = draw_key(&mut scene, data, &scale, below, marks);

@@ -47,7 +47,7 @@ pub fn duration_curve(data: &DurationCurve, marks: &Marks) -> Result<Picture, Ch
     sorted.sort_by(f64::total_cmp);
     let n = sorted.len();
 
-    let title = "How many hours are how cold";
+    let title = "How long it is how cold";
     let subtitle = format!(
         "{} Outdoor temperature of every hour, coldest first.",
         sentence(&data.place, 320.0)

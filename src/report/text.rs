@@ -7,7 +7,7 @@ use super::table::plain_table_within;
 use super::weather_years::weather_years_text;
 use crate::answer::odds::OddsSummary;
 use crate::answer::{Estimate, LeverAnswer, SystemAnswer};
-use crate::locale::{Marks, symbol};
+use crate::locale::Marks;
 
 /// Width of everything that is printed, characters.
 pub(super) const WIDTH: u16 = 80;
@@ -106,16 +106,15 @@ fn heading(estimate: &Estimate, marks: &Marks) -> String {
         home.heat_loss_w_per_k, home.design_heat_load_kw, home.design_outdoor_c,
     );
     let hours = format!(
-        " h, mean {:.1} °C, lowest {:.1} °C{repaired}",
-        weather.mean_c, weather.min_c,
+        "{} h, mean {:.1} °C, lowest {:.1} °C{repaired}",
+        weather.hours, weather.mean_c, weather.min_c,
     );
     format!(
         "{label}: heating and hot water in a year{years}\n\
          Home     {}\n\
-         Weather  {}: {}{}\n\n",
+         Weather  {}: {}\n\n",
         marks.localized(&loss),
         weather.file,
-        marks.number(weather.hours as f64, 0),
         marks.localized(&hours),
     )
 }
@@ -239,15 +238,14 @@ fn table(systems: &[&SystemAnswer], currency: &str, marks: &Marks) -> String {
         let known = figures.iter().any(Option::is_some);
         let cells = figures
             .into_iter()
-            .map(|figure| figure.map_or_else(|| "–".to_owned(), |f| marks.grouped(&f)));
+            .map(|figure| figure.map_or_else(|| "–".to_owned(), |f| marks.localized(&f)));
         known.then(|| std::iter::once((*name).to_owned()).chain(cells).collect())
     });
-    plain_table_within(WIDTH, std::iter::once(unit(currency)).chain(names), rows)
-}
-
-/// The sign of a currency, or its code where it has none.
-fn unit(currency: &str) -> String {
-    symbol(currency).trim_end().to_owned()
+    plain_table_within(
+        WIDTH,
+        std::iter::once(currency.to_owned()).chain(names),
+        rows,
+    )
 }
 
 /// A choice's answer as an adviser could say it.
@@ -263,15 +261,9 @@ fn in_words(
     let difference = if saving.abs() < ABOUT_THE_SAME * (choice.cost + saving).abs() {
         "about the same as today".to_owned()
     } else if saving > 0.0 {
-        format!(
-            "about {} a year less than today",
-            marks.money(currency, saving)
-        )
+        format!("about {saving:.0} {currency} a year less than today")
     } else {
-        format!(
-            "about {} a year more than today",
-            marks.money(currency, -saving)
-        )
+        format!("about {:.0} {currency} a year more than today", -saving)
     };
     let conditions: Vec<_> = levers
         .iter()
