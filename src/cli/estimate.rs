@@ -121,6 +121,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
             outcomes: &outcomes,
             ledgers: &ledgers,
             estimate: &estimate,
+            signature: brief.told.bills.as_ref().map(|bills| &bills.signature),
             locale: brief.locale,
         };
         let files = files(folder, &material).map_err(|error| cannot_write(folder, &*error))?;
@@ -183,7 +184,11 @@ fn files(folder: &Path, material: &Material<'_>) -> Result<Vec<NewFile>, Box<dyn
         files.push(NewFile::new(path("svg"), drawn.picture.svg()?));
         files.push(NewFile::new(path("png"), png));
     }
-    let page = report_html(material, &drawn)?;
+    let phone = pictures(&Material {
+        locale: material.locale.on_a_phone(),
+        ..*material
+    })?;
+    let page = report_html(material, &drawn, &phone)?;
     files.push(NewFile::new(folder.join(REPORT), page));
     #[cfg(feature = "pdf")]
     files.push(NewFile::new(
