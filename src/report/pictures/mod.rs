@@ -108,7 +108,12 @@ pub fn pictures(material: &Material<'_>) -> Result<Vec<Drawn>, ChartError> {
     Ok(all)
 }
 
-fn drawn(name: impl Into<String>, caption: impl Into<String>, picture: Picture) -> Drawn {
+/// A picture without a narrow form.
+pub(super) fn drawn(
+    name: impl Into<String>,
+    caption: impl Into<String>,
+    picture: Picture,
+) -> Drawn {
     Drawn {
         name: name.into(),
         caption: caption.into(),
