@@ -60,23 +60,30 @@ pub struct Beyond {
 /// # Errors
 /// The first line longer than [`LONGEST_LINE`], or that there are more than [`MOST_LINES`].
 pub fn check_lines(text: &str) -> Result<(), Beyond> {
-    let mut count = 0;
-    for line in text.split(['\n', '\r']) {
-        count += 1;
-        if line.len() > LONGEST_LINE {
+    let bytes = text.as_bytes();
+    // Carriage returns end lines only where nothing else does.
+    let end = if bytes.contains(&b'\n') { b'\n' } else { b'\r' };
+    let lines = |bytes: &[u8]| bytes.iter().filter(|&&byte| byte == end).count() + 1;
+    // From line end to line end in the longest strides that are allowed, so that hardly a byte of a real file is looked at.
+    let mut rest = bytes;
+    while let Some(stride) = rest.get(..=LONGEST_LINE) {
+        let Some(at) = stride.iter().rposition(|&byte| byte == end) else {
+            let length = rest.iter().position(|&byte| byte == end);
             return Err(Beyond {
-                line: Some(count),
-                found: format!("a line of {} bytes", line.len()),
+                line: Some(lines(&bytes[..bytes.len() - rest.len()])),
+                found: format!("a line of {} bytes", length.unwrap_or(rest.len())),
                 allowed: format!("lines of at most {} KiB", LONGEST_LINE / 1024),
             });
-        }
-        if count > MOST_LINES {
-            return Err(Beyond {
-                line: Some(count),
-                found: format!("more than {MOST_LINES} lines"),
-                allowed: "at most 20 million lines, thirty years of minutes".to_owned(),
-            });
-        }
+        };
+        rest = &rest[at + 1..];
+    }
+    // A text has no more lines than bytes, but for its last.
+    if bytes.len() >= MOST_LINES && lines(bytes) > MOST_LINES {
+        return Err(Beyond {
+            line: Some(MOST_LINES + 1),
+            found: format!("more than {MOST_LINES} lines"),
+            allowed: "at most 20 million lines, thirty years of minutes".to_owned(),
+        });
     }
     Ok(())
 }
@@ -93,6 +100,10 @@ mod tests {
             check_lines(&format!("x\n{longest}b")).unwrap_err().line,
             Some(2)
         );
+        // Line ends of two bytes are one end, and those of old files are ends too.
+        let two = format!("x\r\ny\r\n{longest}b\r\n");
+        assert_eq!(check_lines(&two).unwrap_err().line, Some(3));
+        assert_eq!(check_lines(&format!("{longest}\r{longest}")), Ok(()));
         assert_eq!(check_lines(&"\n".repeat(MOST_LINES - 1)), Ok(()));
         assert!(check_lines(&"\n".repeat(MOST_LINES)).is_err());
     }

@@ -13,6 +13,16 @@ pub struct Locale {
     pub paper: Paper,
 }
 
+impl Locale {
+    /// The same for a page as wide as a phone.
+    pub fn on_a_phone(self) -> Self {
+        Self {
+            marks: self.marks.on_a_phone(),
+            ..self
+        }
+    }
+}
+
 /// Order of a date.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
 pub enum DateOrder {
@@ -88,6 +98,8 @@ pub struct Marks {
     pub decimal: char,
     /// Between thousands; none for none.
     pub thousands: Option<char>,
+    /// Whether what is written must fit a page as wide as a phone; pictures are then drawn narrow.
+    pub phone: bool,
 }
 
 impl Default for Marks {
@@ -96,11 +108,20 @@ impl Default for Marks {
         Self {
             decimal: '.',
             thousands: Some(','),
+            phone: false,
         }
     }
 }
 
 impl Marks {
+    /// The same marks for a page as wide as a phone.
+    pub fn on_a_phone(self) -> Self {
+        Self {
+            phone: true,
+            ..self
+        }
+    }
+
     /// `value` with so many decimals, a true minus sign, and no minus before a zero.
     pub fn number(&self, value: f64, decimals: usize) -> String {
         if !value.is_finite() {
@@ -221,12 +242,14 @@ mod tests {
         let de = Marks {
             decimal: ',',
             thousands: Some('.'),
+            phone: false,
         };
         assert_eq!(de.number(12345.6, 1), "12.345,6");
         assert_eq!(
             Marks {
                 decimal: '.',
-                thousands: None
+                thousands: None,
+                phone: false,
             }
             .number(12345.6, 0),
             "12346"
@@ -238,6 +261,7 @@ mod tests {
         let de = Marks {
             decimal: ',',
             thousands: Some('.'),
+            phone: false,
         };
         let sentence = "electricity 0.5 % dearer (25.43 ct/kWh). 3 hours.";
         assert_eq!(

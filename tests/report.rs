@@ -8,6 +8,7 @@ use std::path::Path;
 use assert_cmd::Command;
 use roxmltree::{Document, Node};
 use serde_json::Value;
+use sha2::{Digest as _, Sha256};
 
 fn root() -> &'static Path {
     Path::new(env!("CARGO_MANIFEST_DIR"))
@@ -499,5 +500,84 @@ fn inputs_are_told_with_their_checksums() {
         assert_eq!(told["bytes"].as_u64(), Some(bytes as u64));
         let sum = told["sha256"].as_str().unwrap();
         assert!(body(page).contains(sum));
+    }
+}
+
+/// Every file that was read stands with its checksum, the hourly prices among them: a changed price is another answer.
+#[test]
+fn the_checksums_cover_the_hourly_prices() {
+    let folder = tempfile::tempdir().unwrap();
+    let out = folder.path().join("out");
+    let output = estimate(&[
+        "tests/briefs/other_fuels.toml",
+        "--samples",
+        "0",
+        "--out",
+        out.to_str().unwrap(),
+    ]);
+    assert!(output.status.success());
+    let result: Value =
+        serde_json::from_slice(&fs::read(out.join("result.json")).unwrap()).unwrap();
+    let inputs = result["inputs"].as_array().unwrap();
+    let read = |ending: &str| {
+        let mut all = inputs.iter();
+        all.find(|input| input["file"].as_str().unwrap().ends_with(ending))
+            .unwrap_or_else(|| panic!("{ending} is not among {inputs:?}"))
+    };
+    for (ending, path) in [
+        ("other_fuels.toml", "tests/briefs/other_fuels.toml"),
+        ("ostrel_plain.csv", "weather_samples/ostrel_plain.csv"),
+        ("hourly_electricity.toml", "tariffs/hourly_electricity.toml"),
+        ("hourly_prices.csv", "tariffs/hourly_prices.csv"),
+        ("pellets.toml", "tariffs/pellets.toml"),
+    ] {
+        let content = fs::read(root().join(path)).unwrap();
+        let sha256: String = Sha256::digest(&content)
+            .iter()
+            .map(|byte| format!("{byte:02x}"))
+            .collect();
+        assert_eq!(read(ending)["sha256"], sha256, "{path}");
+        assert_eq!(read(ending)["bytes"], content.len(), "{path}");
+    }
+}
+
+/// On a phone no picture scrolls: each has a form of its own whose smallest letters are at least 11 px in 360 px of page.
+#[test]
+fn every_picture_of_the_demonstration_has_a_form_for_a_phone() {
+    let (_, page, _) = demonstration();
+    let body = body(page);
+    let document = Document::parse(&body).unwrap();
+    let figures: Vec<_> = named(document.root(), "figure").collect();
+    assert!(figures.len() > 15);
+    for figure in figures {
+        assert_eq!(
+            figure.attribute("class"),
+            Some("has-narrow"),
+            "{:?}",
+            figure.attribute("id")
+        );
+        let narrow = figure
+            .children()
+            .find(|n| n.attribute("class") == Some("narrow"))
+            .unwrap();
+        if narrow.tag_name().name() == "ul" {
+            continue;
+        }
+        let svg = named(narrow, "svg").next().unwrap();
+        let wide: f64 = svg
+            .attribute("viewBox")
+            .unwrap()
+            .split(' ')
+            .nth(2)
+            .unwrap()
+            .parse()
+            .unwrap();
+        for text in named(svg, "text") {
+            let size = text
+                .attribute("font-size")
+                .unwrap_or_else(|| panic!("a text without size: {text:?}"));
+            let size: f64 = size.trim_end_matches("px").parse().unwrap();
+            assert!(size * 360.0 / wide >= 11.0, "{size} of {wide}");
+        }
     }
 }

@@ -38,7 +38,11 @@ pub(super) fn locale(table: Option<&Section<ReportTable>>, check: &mut Check) ->
         return None;
     }
     Some(Locale {
-        marks: Marks { decimal, thousands },
+        marks: Marks {
+            decimal,
+            thousands,
+            phone: false,
+        },
         dates: dates.map(|(order,)| order).unwrap_or_default(),
         paper: paper.map(|(paper,)| paper).unwrap_or_default(),
     })

@@ -1,12 +1,13 @@
 //! The tables `[odds]` and `[choice.odds]`: what is not known for certain, and within what.
 
-use schemars::JsonSchema;
+use schemars::{JsonSchema, Schema};
 use serde::Deserialize;
+use toml::Value;
 
 use super::leaves::HeatLossSource;
 use super::notes::Notes;
 use super::raw;
-use crate::document::{Check, Leaf, Section};
+use crate::document::{Check, Leaf, LeafValue, Section};
 use crate::problem::Problems;
 use crate::study::odds::{Declared, Range};
 use crate::study::{Case, Lever};
@@ -57,17 +58,45 @@ pub(super) struct ChoiceOddsTable {
 #[derive(Debug, Deserialize, JsonSchema)]
 pub(super) struct RangeTable {
     /// Never below.
-    pub low: Option<Leaf<String>>,
+    pub low: Option<Leaf<Figure>>,
     /// Most likely.
-    pub likely: Option<Leaf<String>>,
+    pub likely: Option<Leaf<Figure>>,
     /// Never above.
-    pub high: Option<Leaf<String>>,
+    pub high: Option<Leaf<Figure>>,
     /// Mean of a normal range.
-    pub mean: Option<Leaf<String>>,
+    pub mean: Option<Leaf<Figure>>,
     /// Median of a log-normal range.
-    pub median: Option<Leaf<String>>,
+    pub median: Option<Leaf<Figure>>,
     /// Standard deviation: of a normal range in its own unit, of a log-normal one as a percentage up or down.
-    pub deviation: Option<Leaf<String>>,
+    pub deviation: Option<Leaf<Figure>>,
+}
+
+/// A number of a range as it is written: its lever says in which units.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(super) enum Figure {
+    /// In quotes, with its unit.
+    Quoted(String),
+    /// A bare number, which is refused with what its lever wants.
+    Bare(String),
+}
+
+impl LeafValue for Figure {
+    fn read(value: &Value) -> Result<Self, UnitProblem> {
+        match value {
+            Value::Integer(_) | Value::Float(_) => Ok(Self::Bare(value.to_string())),
+            _ => String::read(value)
+                .map(Self::Quoted)
+                .map_err(|problem| UnitProblem {
+                    allowed: "a number with its unit, in quotes".to_owned(),
+                    remedy: "write for example \"90 %\"".to_owned(),
+                    ..problem
+                }),
+        }
+    }
+
+    fn schema() -> Schema {
+        String::schema()
+    }
 }
 
 /// What a brief says about its unknowns.
@@ -76,6 +105,8 @@ pub(super) struct Said {
     declared: Vec<(Declared, std::ops::Range<usize>)>,
     /// Correlation of the two prices.
     pub price_correlation: Option<f64>,
+    /// Where it stands.
+    correlation_at: Option<std::ops::Range<usize>>,
     /// Standard error asked for, as a fraction.
     pub precision: Option<f64>,
 }
@@ -83,8 +114,46 @@ pub(super) struct Said {
 /// Reads one number of a range into the unit of its lever.
 type Reader = fn(&str) -> Result<f64, UnitProblem>;
 
+/// A number without a unit up to this is meant as a multiple, beyond it as a quantity or a percentage.
+const LARGEST_MULTIPLE: f64 = 5.0;
+
 fn share(text: &str) -> Result<f64, UnitProblem> {
-    parse::<Share>(text).map(Share::fraction)
+    parse::<Share>(text)
+        .map(Share::fraction)
+        .map_err(|problem| match text.trim().parse::<f64>() {
+            Ok(number) if number.abs() <= LARGEST_MULTIPLE => UnitProblem {
+                remedy: format!(
+                    "write \"{} %\" if that share of what stands in the brief is meant",
+                    crate::answer::short(number * 100.0)
+                ),
+                ..problem
+            },
+            _ => problem,
+        })
+}
+
+/// A heat loss as a coefficient, or as a share of the home's, which is given in W/K where the brief states it.
+fn loss(text: &str, home_w_per_k: Option<f64>) -> Result<f64, UnitProblem> {
+    match (parse::<HeatLossCoefficient>(text), home_w_per_k) {
+        (Ok(loss), Some(home)) => Ok(loss.w_per_k() / home),
+        (Ok(_), None) => Err(UnitProblem {
+            found: format!("\"{text}\" for a home whose heat loss is not stated in W/K"),
+            allowed: "a share in %".to_owned(),
+            remedy: "write the range as shares of the home's heat loss, for example \"90 %\""
+                .to_owned(),
+        }),
+        (Err(coefficient), home) => share(text).map_err(|problem| match home {
+            Some(_) => UnitProblem {
+                allowed: format!("{}, or {}", coefficient.allowed, problem.allowed),
+                remedy: match text.trim().parse::<f64>() {
+                    Ok(number) if number.abs() > LARGEST_MULTIPLE => coefficient.remedy,
+                    _ => problem.remedy,
+                },
+                ..problem
+            },
+            None => problem,
+        }),
+    }
 }
 
 fn celsius(text: &str) -> Result<f64, UnitProblem> {
@@ -108,6 +177,7 @@ pub(super) fn said(raw: &raw::Brief, check: &mut Check) -> Said {
     let mut said = Said::default();
     if let Some(odds) = &raw.odds {
         said.price_correlation = check.value(&odds.price_correlation).map(Share::fraction);
+        said.correlation_at = odds.price_correlation.as_ref().map(Leaf::span);
         if let (Some(correlation), Some(leaf)) = (said.price_correlation, &odds.price_correlation)
             && correlation.abs() > 1.0
         {
@@ -156,11 +226,11 @@ pub(super) fn said(raw: &raw::Brief, check: &mut Check) -> Said {
             ),
         ];
         for (lever, table, value, deviation) in ranges {
-            let loss = |text: &str| match (parse::<HeatLossCoefficient>(text), per_home) {
-                (Ok(loss), Some(home)) if lever == Lever::HeatLoss => Ok(loss.w_per_k() / home),
+            let read = |text: &str| match lever {
+                Lever::HeatLoss => loss(text, per_home),
                 _ => value(text),
             };
-            said.add(lever, 1, table, (&loss, &deviation), check);
+            said.add(lever, 1, table, (&read, &deviation), check);
         }
     }
     for (place, choice) in raw.choice.iter().enumerate() {
@@ -250,6 +320,16 @@ impl Said {
 
     /// Checks every range against the case and notes it among what was assumed.
     pub fn checked(self, case: &Case, check: &mut Check, notes: &mut Notes) -> Vec<Declared> {
+        if let Some(span) = &self.correlation_at
+            && Lever::FuelRate.now(case, 1).is_none()
+        {
+            check.refuse(
+                span,
+                "a correlation with the price of gas, and no system that burns any",
+                "only where today's system or a choice burns a fuel",
+                "leave the line out",
+            );
+        }
         let mut kept = Vec::new();
         for (declared, span) in self.declared {
             if placed(declared.check(case), &span, check) {
@@ -284,12 +364,27 @@ fn placed(result: Result<(), Problems>, span: &std::ops::Range<usize>, check: &m
 }
 
 fn number(
-    leaf: &Option<Leaf<String>>,
+    leaf: &Option<Leaf<Figure>>,
     read: &dyn Fn(&str) -> Result<f64, UnitProblem>,
     check: &mut Check,
 ) -> Option<f64> {
-    let text = check.value(leaf)?;
-    match read(&text) {
+    let refused = match check.value(leaf)? {
+        Figure::Quoted(text) => read(&text),
+        Figure::Bare(number) => match read(&number) {
+            // A number in quotes may stand without a unit, one without quotes may not.
+            Ok(_) => Err(UnitProblem {
+                found: String::new(),
+                allowed: "a number with its unit, in quotes".to_owned(),
+                remedy: format!("write \"{number}\""),
+            }),
+            Err(problem) => Err(problem),
+        }
+        .map_err(|problem| UnitProblem {
+            found: format!("the bare number {number}"),
+            ..problem
+        }),
+    };
+    match refused {
         Ok(number) => Some(number),
         Err(problem) => {
             let span = leaf.as_ref()?.span();

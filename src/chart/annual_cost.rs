@@ -80,7 +80,7 @@ pub fn annual_cost(data: &AnnualCost, marks: &Marks) -> Result<Picture, ChartErr
         "Bills of one year by system."
     };
     let title = "What a year costs to run";
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, subtitle);
     let axis = format!("Cost of a year, {}", money_unit(&data.currency));
     bars::draw(&mut scene, top, &bars, &PARTS, &axis, &money, marks);

@@ -6,7 +6,7 @@ use super::geometry::{Point, Rect};
 use super::key::Swatch;
 use super::label::{Anchor, BODY, SMALL, Type};
 use super::palette::{AXIS, Colour, Dash, GRID, Hatch, INK, MUTED, WHITE};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{Marks, named, numbers};
 
 /// One bar.
@@ -119,7 +119,7 @@ pub(crate) fn draw(
         .filter(|(part, _)| drawn(*part))
         .map(|(_, (name, colour, hatch))| (Swatch::Area(*colour, *hatch), *name))
         .collect();
-    let top = scene.key(&entries, MARGIN, top, WIDTH - 2.0 * MARGIN) + 6.0;
+    let top = scene.key(&entries, MARGIN, top, scene.width - 2.0 * MARGIN) + 6.0;
     let bottom = top + ROW * bars.len() as f64;
     scene.height = (bottom + 52.0).ceil();
 
@@ -133,7 +133,7 @@ pub(crate) fn draw(
     };
     let remark_wide = widest(REMARK, &|b| b.remark.clone());
     let whole_wide = widest(WHOLE, &|b| write(b.whole()));
-    let remark_at = WIDTH - MARGIN - remark_wide;
+    let remark_at = scene.width - MARGIN - remark_wide;
     let whole_at = remark_at - if remark_wide > 0.0 { 14.0 } else { 0.0 };
     let left = MARGIN;
     let right = (whole_at - whole_wide - 16.0).max(left + 120.0);
@@ -148,7 +148,12 @@ pub(crate) fn draw(
         scene.tick(text, (x_text, bottom + 18.0), Anchor::Middle);
     }
     scene.line(&[(left, bottom), (right, bottom)], AXIS, 1.2);
-    let title = font::fit(&axis.title, SMALL, Weight::Regular, WIDTH - 2.0 * MARGIN);
+    let title = font::fit(
+        &axis.title,
+        SMALL,
+        Weight::Regular,
+        scene.width - 2.0 * MARGIN,
+    );
     let title_at = right.max(left + Type::small().width(&title));
     scene.text(
         &title,
@@ -166,7 +171,7 @@ pub(crate) fn draw(
             bar.label,
             bar.today,
             row + 18.0,
-            WIDTH - 2.0 * MARGIN,
+            scene.width - 2.0 * MARGIN,
         );
         draw_bar(scene, bar, parts, y, &at, write);
         if let Some(t) = today.filter(|t| *t != i) {

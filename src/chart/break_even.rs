@@ -7,7 +7,7 @@ use super::geometry::Rect;
 use super::label::{Anchor, SMALL, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{Dash, INK, WHITE, series};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "break-even";
@@ -72,7 +72,7 @@ pub fn break_even(data: &BreakEven, marks: &Marks) -> Result<Picture, ChartError
         "Against {} alone; all else stays as it is.",
         lower_first(&lever)
     );
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(&title, &subtitle);
     scene.height = top + PLOT + 6.0;
 
@@ -88,7 +88,7 @@ pub fn break_even(data: &BreakEven, marks: &Marks) -> Result<Picture, ChartError
         Rect {
             left: MARGIN,
             top,
-            right: WIDTH - MARGIN - RIGHT + 12.0,
+            right: scene.width - MARGIN - scene.aside(RIGHT) + 12.0,
             bottom: top + PLOT,
         },
         Axis::tight(&format!("{lever}, {}", data.unit), x.0, x.1, 6, marks),
@@ -118,7 +118,8 @@ pub fn break_even(data: &BreakEven, marks: &Marks) -> Result<Picture, ChartError
             });
         }
     }
-    ends::draw(&mut scene, &frame, &names, RIGHT);
+    let room = scene.aside(RIGHT);
+    ends::draw(&mut scene, &frame, &names, room);
     draw_crossings(&mut scene, &frame, data, marks);
     Ok(Picture::new(&title, alt(data, marks), scene))
 }

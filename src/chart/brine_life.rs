@@ -7,7 +7,7 @@ use super::geometry::Rect;
 use super::label::{SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{Dash, INK, series};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "brine over the life";
@@ -54,7 +54,7 @@ pub fn brine_life(data: &BrineLife, marks: &Marks) -> Result<Picture, ChartError
     )?;
     let title = "The ground over its life";
     let subtitle = format!("{} One point a year.", sentence(&data.source, 320.0));
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle);
     scene.height = top + PLOT + 6.0;
     let marked = || all().chain(data.limit.iter().map(|limit| limit.1));
@@ -64,7 +64,7 @@ pub fn brine_life(data: &BrineLife, marks: &Marks) -> Result<Picture, ChartError
         Rect {
             left: MARGIN,
             top,
-            right: WIDTH - MARGIN - RIGHT + 12.0,
+            right: scene.width - MARGIN - scene.aside(RIGHT) + 12.0,
             bottom: top + PLOT,
         },
         Axis::tight("Year of its life", 1.0, years as f64, 6, marks),
@@ -89,7 +89,8 @@ pub fn brine_life(data: &BrineLife, marks: &Marks) -> Result<Picture, ChartError
             });
         }
     }
-    ends::draw(&mut scene, &frame, &names, RIGHT);
+    let room = scene.aside(RIGHT);
+    ends::draw(&mut scene, &frame, &names, room);
     if let Some((name, level)) = &data.limit {
         frame.level(&mut scene, *level, INK, Dash::Short);
         let (x, y) = frame.at(1.0 + (years - 1) as f64 / 3.0, *level);

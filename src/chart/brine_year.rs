@@ -7,7 +7,7 @@ use super::geometry::Rect;
 use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{AXIS, Dash, INK, series};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "brine through the year";
@@ -71,7 +71,7 @@ pub fn brine_year(data: &BrineYear, marks: &Marks) -> Result<Picture, ChartError
         "{} Brine entering the machine: mean of each day, and its span.",
         sentence(&data.source, 320.0)
     );
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle);
     scene.height = top + PLOT + 6.0;
     let marked = || {
@@ -92,7 +92,7 @@ pub fn brine_year(data: &BrineYear, marks: &Marks) -> Result<Picture, ChartError
         Rect {
             left: MARGIN,
             top,
-            right: WIDTH - MARGIN - RIGHT + 12.0,
+            right: scene.width - MARGIN - scene.aside(RIGHT) + 12.0,
             bottom: top + PLOT,
         },
         Axis::named("", 0.0, days, Vec::new()),
@@ -123,7 +123,8 @@ pub fn brine_year(data: &BrineYear, marks: &Marks) -> Result<Picture, ChartError
             });
         }
     }
-    ends::draw(&mut scene, &frame, &names, RIGHT);
+    let room = scene.aside(RIGHT);
+    ends::draw(&mut scene, &frame, &names, room);
     draw_levels(&mut scene, &frame, data, marks);
     draw_lowest(&mut scene, &frame, data, marks);
     Ok(Picture::new(title, alt(data, marks), scene))
@@ -173,7 +174,13 @@ fn draw_months(scene: &mut Scene, frame: &Frame, data: &BrineYear, days: f64) {
             1.0,
         );
         let room = frame.at_x(end) - x - 3.0;
-        if room > 14.0 {
+        let initial: String = name.chars().take(1).collect();
+        let (name, least) = if scene.narrow() {
+            (&initial, 11.0)
+        } else {
+            (name, 14.0)
+        };
+        if room > least {
             let name = font::fit(name, SMALL, Weight::Regular, room);
             scene.tick(
                 &name,

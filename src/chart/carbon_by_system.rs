@@ -89,7 +89,7 @@ pub fn carbon_by_system(data: &CarbonBySystem, marks: &Marks) -> Result<Picture,
     if bars::has_comparison(&bars) {
         subtitle += " The dashed mark is today’s system.";
     }
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle);
     bars::draw(
         &mut scene,

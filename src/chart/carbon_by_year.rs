@@ -68,7 +68,7 @@ pub fn carbon_by_year(data: &CarbonByYear, marks: &Marks) -> Result<Picture, Cha
         "" => "Of each year from now on.".to_owned(),
         scope => format!("Of each year from now on; factors: {scope}."),
     };
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle);
     scene.height = top + PLOT + 6.0;
     let year = |i: usize| f64::from(data.first_year) + i as f64;
@@ -77,7 +77,7 @@ pub fn carbon_by_year(data: &CarbonByYear, marks: &Marks) -> Result<Picture, Cha
         ..*marks
     };
     let frame = Frame::inside(
-        ends::area(top, PLOT, RIGHT),
+        ends::area(&scene, top, PLOT, scene.aside(RIGHT)),
         Axis::tight("Year", year(0), year(years - 1), 6, &plain),
         Axis::linear(
             "kg CO₂e in the year",
@@ -102,7 +102,8 @@ pub fn carbon_by_year(data: &CarbonByYear, marks: &Marks) -> Result<Picture, Cha
                 .collect(),
         })
         .collect();
-    ends::courses(&mut scene, &frame, &courses, RIGHT);
+    let room = scene.aside(RIGHT);
+    ends::courses(&mut scene, &frame, &courses, room);
     Ok(Picture::new(title, alt(data, years, marks), scene))
 }
 

@@ -6,7 +6,7 @@ use super::label::{Anchor, SMALL, Type};
 use super::numbers::{self, Marks};
 use super::palette::{AXIS, INK};
 use super::ramp;
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, font, font::Weight};
 
 const PICTURE: &str = "carpet of the year";
@@ -69,7 +69,7 @@ pub fn carpet(data: &Carpet, marks: &Marks) -> Result<Picture, ChartError> {
     let ends = (scale.values[0], scale.values[scale.values.len() - 1]);
     let share = |v: f64| (v - ends.0) / (ends.1 - ends.0);
 
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let missing = data.hours.iter().filter(|h| h.is_none()).count();
     let mut subtitle = format!("{}, one column a day, one row an hour.", data.quantity);
     if missing > 0 {
@@ -82,7 +82,7 @@ pub fn carpet(data: &Carpet, marks: &Marks) -> Result<Picture, ChartError> {
     scene.height = top + PLOT + 6.0;
 
     let days = data.hours.len().div_ceil(24);
-    let frame = frame(data, days, top);
+    let frame = frame(data, days, top, scene.width);
     frame.draw_y(&mut scene);
     draw_cells(&mut scene, &frame, data, &share);
     draw_months(&mut scene, &frame, data, days);
@@ -133,12 +133,12 @@ fn draw_key(
     top + 40.0
 }
 
-fn frame(data: &Carpet, days: usize, top: f64) -> Frame {
+fn frame(data: &Carpet, days: usize, top: f64, width: f64) -> Frame {
     let hours = [0, 6, 12, 18, 24].map(|h| (f64::from(h), format!("{h:02}:00")));
     let outer = Rect {
         left: MARGIN,
         top,
-        right: WIDTH - MARGIN,
+        right: width - MARGIN,
         bottom: top + PLOT,
     };
     let mut frame = Frame::inside(
@@ -187,8 +187,13 @@ fn draw_months(scene: &mut Scene, frame: &Frame, data: &Carpet, days: usize) {
         let x = frame.at_x(*start);
         scene.line(&[(x, bottom), (x, bottom + 5.0)], AXIS, 1.2);
         let middle = (x + frame.at_x(end)) / 2.0;
+        let name = if scene.narrow() {
+            name.chars().next().map_or(String::new(), String::from)
+        } else {
+            name.clone()
+        };
         let name = font::fit(
-            name,
+            &name,
             SMALL,
             Weight::Regular,
             (frame.at_x(end) - x - 3.0).max(14.0),

@@ -8,7 +8,7 @@ use super::label::{Anchor, SMALL, Type};
 use super::layers::{self, Layer};
 use super::numbers::Marks;
 use super::palette::{AXIS, AZURE, CORAL, Dash, GRID, Hatch, INK, NAVY, OCHRE, TEAL};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene, width_of};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "coldest days";
@@ -62,7 +62,7 @@ pub fn coldest_days(data: &ColdestDays, marks: &Marks) -> Result<Picture, ChartE
         "{} On the clock of the home.",
         sentence(&data.system, 320.0)
     );
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let below = scene.heading(title, &subtitle);
     let main = named(&data.main_heater);
     let mut entries = vec![
@@ -73,7 +73,7 @@ pub fn coldest_days(data: &ColdestDays, marks: &Marks) -> Result<Picture, ChartE
     if data.hours.iter().any(|h| short(h) > 0.0) {
         entries.insert(2, (Swatch::Area(OCHRE, Hatch::Crossed), "not met".into()));
     }
-    let top = scene.key(&entries, MARGIN, below, WIDTH - 2.0 * MARGIN);
+    let top = scene.key(&entries, MARGIN, below, scene.width - 2.0 * MARGIN);
 
     let indoor: Vec<f64> = data.hours.iter().filter_map(|h| h.indoor_c).collect();
     let heights: Vec<f64> = [PANEL, HEAT, PANEL]
@@ -172,7 +172,7 @@ fn frames(
             let area = Rect {
                 left: MARGIN + widest + 8.0,
                 top: y + GAP,
-                right: WIDTH - MARGIN - 12.0,
+                right: width_of(marks) - MARGIN - 12.0,
                 bottom: y + GAP + height,
             };
             y = area.bottom;

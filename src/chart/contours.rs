@@ -8,7 +8,7 @@ use super::key::Swatch;
 use super::label::{Anchor, SMALL, Type};
 use super::numbers::{self, Marks};
 use super::palette::{AXIS, Dash, INK, NAVY, OCHRE, WHITE};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "saving over two prices";
@@ -53,7 +53,7 @@ pub fn contours(data: &Contours, marks: &Marks) -> Result<Picture, ChartError> {
     };
     let outcome = sentence(&data.outcome, 420.0);
     let subtitle = format!("{outcome} Each line joins prices with the same result.");
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let below = scene.heading(title, &subtitle);
     let mut entries = vec![
         (Swatch::Line(NAVY, Dash::Solid, 1.8), "gain"),
@@ -66,7 +66,7 @@ pub fn contours(data: &Contours, marks: &Marks) -> Result<Picture, ChartError> {
             "constant price ratio",
         ));
     }
-    let top = scene.key(&entries, MARGIN, below, WIDTH - 2.0 * MARGIN);
+    let top = scene.key(&entries, MARGIN, below, scene.width - 2.0 * MARGIN);
     scene.height = top + PLOT + 6.0;
     let title_of = |(name, unit): &(String, String)| format!("{}, {unit}", named(name));
     let span = |v: &[f64]| (v[0], v[v.len() - 1]);
@@ -75,7 +75,7 @@ pub fn contours(data: &Contours, marks: &Marks) -> Result<Picture, ChartError> {
         Rect {
             left: MARGIN,
             top,
-            right: WIDTH - MARGIN - 20.0,
+            right: scene.width - MARGIN - 20.0,
             bottom: top + PLOT,
         },
         Axis::tight(&title_of(&data.x_name), x.0, x.1, 7, marks),

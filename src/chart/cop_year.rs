@@ -9,7 +9,7 @@ use super::key::Swatch;
 use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{BROWN, Dash, INK};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, font, named};
 
 const PICTURE: &str = "COP through the year";
@@ -58,9 +58,13 @@ pub fn cop_year(data: &CopYear, marks: &Marks) -> Result<Picture, ChartError> {
     )?;
 
     let title = "COP through the year";
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let below = scene.heading(title, "Each cell counts hours in which the machine runs.");
-    let columns = if data.systems.len() > 1 { 2 } else { 1 };
+    let columns = if data.systems.len() > 1 && !scene.narrow() {
+        2
+    } else {
+        1
+    };
     let plot = if columns == 1 { 350.0 } else { 280.0 };
     let block = plot + 24.0;
     let rows = data.systems.len().div_ceil(columns);
@@ -68,7 +72,7 @@ pub fn cop_year(data: &CopYear, marks: &Marks) -> Result<Picture, ChartError> {
     scene.height = top + block * rows as f64 + 6.0;
 
     let (x, y) = axes(data, columns, marks);
-    let wide = (WIDTH - 2.0 * MARGIN) / columns as f64;
+    let wide = (scene.width - 2.0 * MARGIN) / columns as f64;
     let mut highest = 0;
     for (i, system) in data.systems.iter().enumerate() {
         let left = MARGIN + wide * (i % columns) as f64;
@@ -105,7 +109,7 @@ pub fn cop_year(data: &CopYear, marks: &Marks) -> Result<Picture, ChartError> {
 fn draw_key(scene: &mut Scene, highest: usize, top: f64) -> f64 {
     let mut entries = cloud::key(highest);
     entries.push((Swatch::Line(BROWN, Dash::Solid, 3.0), "median".into()));
-    scene.key(&entries, MARGIN, top, WIDTH - 2.0 * MARGIN)
+    scene.key(&entries, MARGIN, top, scene.width - 2.0 * MARGIN)
 }
 
 fn axes(data: &CopYear, columns: usize, marks: &Marks) -> (Axis, Axis) {

@@ -5,7 +5,7 @@ use super::frame::Axis;
 use super::label::{Anchor, BODY, SMALL, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{AXIS, GRID, INK, MUTED, NAVY, WHITE};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "odds of cost";
@@ -51,7 +51,7 @@ pub fn cost_odds(data: &CostOdds, marks: &Marks) -> Result<Picture, ChartError> 
     let title = "Cost of a year and how far it may be off";
     let subtitle =
         "From the line's left to its right end in eight cases of ten; the ring is the middle.";
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, subtitle) + 6.0;
     let bottom = top + ROW * data.systems.len() as f64 + 6.0;
     scene.height = bottom + 52.0;
@@ -64,7 +64,7 @@ pub fn cost_odds(data: &CostOdds, marks: &Marks) -> Result<Picture, ChartError> 
         7,
         marks,
     );
-    let (left, right) = (MARGIN + 22.0, WIDTH - MARGIN - 22.0);
+    let (left, right) = (MARGIN + 22.0, scene.width - MARGIN - 22.0);
     let at = |v: f64| left + (v - axis.low) / (axis.high - axis.low) * (right - left);
     for (value, text) in &axis.ticks {
         scene.line(&[(at(*value), top), (at(*value), bottom)], GRID, 1.0);
@@ -87,10 +87,10 @@ pub fn cost_odds(data: &CostOdds, marks: &Marks) -> Result<Picture, ChartError> 
             marks.money(&data.currency, system.p90),
             marks.money(&data.currency, system.p50)
         );
-        let room = WIDTH - 2.0 * MARGIN - small.width(&spread) - 28.0;
+        let room = scene.width - 2.0 * MARGIN - small.width(&spread) - 28.0;
         let name = font::fit(named(&system.label), BODY, Weight::Regular, room);
         scene.plate(&name, (MARGIN, line), Anchor::Start, Type::body());
-        scene.plate(&spread, (WIDTH - MARGIN, line), Anchor::End, small);
+        scene.plate(&spread, (scene.width - MARGIN, line), Anchor::End, small);
         scene.line(&[(at(system.p10), y), (at(system.p90), y)], NAVY, 5.0);
         for end in [system.p10, system.p90] {
             scene.line(&[(at(end), y - 7.0), (at(end), y + 7.0)], NAVY, 2.4);

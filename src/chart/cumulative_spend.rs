@@ -76,7 +76,7 @@ pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture
     };
     let subtitle =
         format!("Everything added up{how}. Rings: a choice has caught up with today’s system.");
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle);
     scene.height = top + PLOT + 6.0;
 
@@ -90,7 +90,7 @@ pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture
     let high = all().fold(f64::NEG_INFINITY, f64::max);
     let y_title = format!("Spent so far, {}", money_unit(&data.currency));
     let frame = Frame::inside(
-        ends::area(top, PLOT, RIGHT),
+        ends::area(&scene, top, PLOT, scene.aside(RIGHT)),
         Axis::tight("Years from now", 0.0, (years - 1) as f64, 6, marks),
         Axis::linear(&y_title, low, high, 6, marks),
     );
@@ -109,7 +109,8 @@ pub fn cumulative_spend(data: &CumulativeSpend, marks: &Marks) -> Result<Picture
                 .collect(),
         })
         .collect();
-    ends::courses(&mut scene, &frame, &courses, RIGHT);
+    let room = scene.aside(RIGHT);
+    ends::courses(&mut scene, &frame, &courses, room);
     let set = Type::new(SMALL, Weight::Bold, INK);
     for (_, (year, spent)) in caught_up(data) {
         let (x, y) = frame.at(year, spent);

@@ -6,7 +6,7 @@ use super::key::Swatch;
 use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{BROWN, Dash, INK, OCHRE};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene, width_of};
 use super::{ChartError, Picture, cloud, finite, font::Weight, named, sentence};
 
 const PICTURE: &str = "demand and output";
@@ -58,7 +58,7 @@ pub fn demand_and_output(data: &DemandAndOutput, marks: &Marks) -> Result<Pictur
         "{} Each cell counts hours of the year.",
         sentence(&data.system, 320.0)
     );
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle);
     // The shades follow from the plot, which stands below the key: the room is kept for a key with every shade.
     let plot_top = draw_key(&mut scene.clone(), data, cloud::ALL, top);
@@ -129,7 +129,7 @@ fn draw_key(scene: &mut Scene, data: &DemandAndOutput, highest: usize, top: f64)
     if !data.least_output.is_empty() {
         entries.push((Swatch::Line(BROWN, Dash::Short, 2.2), "least output".into()));
     }
-    scene.key(&entries, MARGIN, top, WIDTH - 2.0 * MARGIN)
+    scene.key(&entries, MARGIN, top, scene.width - 2.0 * MARGIN)
 }
 
 fn frame(data: &DemandAndOutput, top: f64, marks: &Marks) -> Frame {
@@ -157,7 +157,7 @@ fn frame(data: &DemandAndOutput, top: f64, marks: &Marks) -> Frame {
     let outer = Rect {
         left: MARGIN,
         top,
-        right: WIDTH - MARGIN,
+        right: width_of(marks) - MARGIN,
         bottom: top + PLOT,
     };
     Frame::inside(outer, x, y)

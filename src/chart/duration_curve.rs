@@ -6,7 +6,7 @@ use super::geometry::Rect;
 use super::label::{Anchor, SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{Dash, INK, NAVY, WHITE};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, font, named, sentence};
 
 const PICTURE: &str = "duration curve";
@@ -52,14 +52,14 @@ pub fn duration_curve(data: &DurationCurve, marks: &Marks) -> Result<Picture, Ch
         "{} Outdoor temperature of every hour, coldest first.",
         sentence(&data.place, 320.0)
     );
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle);
     scene.height = top + PLOT + 6.0;
     let frame = Frame::inside(
         Rect {
             left: MARGIN,
             top,
-            right: WIDTH - MARGIN,
+            right: scene.width - MARGIN,
             bottom: top + PLOT,
         },
         Axis::tight("Hours", 0.0, n as f64, 8, marks),

@@ -6,7 +6,7 @@ use super::geometry::Rect;
 use super::label::{Anchor, SMALL, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{Dash, INK, NAVY, WHITE};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "emitters";
@@ -82,7 +82,7 @@ pub fn emitter_study(data: &EmitterStudy, marks: &Marks) -> Result<Picture, Char
         "{} Against the flow temperature on the design day.",
         sentence(&data.choice, 330.0)
     );
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle);
     scene.height = top + PANELS.iter().sum::<f64>() + 6.0;
 
@@ -124,7 +124,7 @@ pub fn emitter_study(data: &EmitterStudy, marks: &Marks) -> Result<Picture, Char
             Rect {
                 left: MARGIN,
                 top: y,
-                right: WIDTH - MARGIN,
+                right: scene.width - MARGIN,
                 bottom: y + height + below,
             },
             Axis::tight(

@@ -6,7 +6,7 @@ use super::geometry::Rect;
 use super::label::{Anchor, SMALL, Type};
 use super::named;
 use super::palette::{Colour, INK, series};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 
 /// Height of a line of a name.
 const LINE: f64 = 16.5;
@@ -30,11 +30,11 @@ pub(crate) struct Course<'a> {
 }
 
 /// Room of a plot of a height below `top` that leaves `room` at the right for the names.
-pub(crate) fn area(top: f64, height: f64, room: f64) -> Rect {
+pub(crate) fn area(scene: &Scene, top: f64, height: f64, room: f64) -> Rect {
     Rect {
         left: MARGIN,
         top,
-        right: WIDTH - MARGIN - room + 12.0,
+        right: scene.width - MARGIN - room + 12.0,
         bottom: top + height,
     }
 }

@@ -7,7 +7,7 @@ use super::numbers::{self, Marks};
 use super::palette::{
     AXIS, AZURE, BROWN, CORAL, Colour, GRID, Hatch, INK, MUTED, NAVY, OCHRE, TEAL,
 };
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "energy flow";
@@ -73,12 +73,20 @@ impl FlowKind {
 const TALL: f64 = 210.0;
 /// Least room of a flow, for its two lines of text.
 const SLOT: f64 = 44.0;
+/// Height of a line of a name.
+const LINE: f64 = 17.0;
 /// Width of a node.
 const NODE: f64 = 16.0;
-/// Left edges of the three nodes.
+/// Left edges of the three nodes, and those on a phone.
 const NODES: [f64; 3] = [212.0, 352.0, 492.0];
+const PHONE_NODES: [f64; 3] = [128.0, 194.0, 260.0];
 /// Straight pieces of a bent edge.
 const PIECES: usize = 24;
+
+/// Left edges of the nodes on this canvas.
+fn nodes(scene: &Scene) -> [f64; 3] {
+    if scene.narrow() { PHONE_NODES } else { NODES }
+}
 
 /// Draws the energy flow.
 ///
@@ -104,27 +112,30 @@ pub fn energy_flow(data: &EnergyFlow, marks: &Marks) -> Result<Picture, ChartErr
         "{} Energy of a year; each band is as high as its energy.",
         sentence(&data.system, 320.0)
     );
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle) + 26.0;
     let scale = TALL / whole;
-    let room = |side: &[&Flow]| side.iter().map(|f| (f.kwh * scale).max(SLOT)).sum::<f64>();
+    let nodes = nodes(&scene);
+    // On a phone a name takes two lines.
+    let least = if scene.narrow() { SLOT + LINE } else { SLOT };
+    let room = |side: &[&Flow]| side.iter().map(|f| (f.kwh * scale).max(least)).sum::<f64>();
     let tall = room(&sides[0]).max(room(&sides[1])).max(TALL);
     scene.height = (top + tall + 2.0 * MARGIN).ceil();
 
     let centre = top + tall / 2.0;
     let heater = [
-        (NODES[1], centre - TALL / 2.0),
-        (NODES[1] + NODE, centre + TALL / 2.0),
+        (nodes[1], centre - TALL / 2.0),
+        (nodes[1] + NODE, centre + TALL / 2.0),
     ];
     for (left, side) in [(true, &sides[0]), (false, &sides[1])] {
         let mut slot = centre - room(side) / 2.0;
         let mut at_heater = heater[0].1;
         for flow in side {
             let high = flow.kwh * scale;
-            let y = slot + (high.max(SLOT) - high) / 2.0;
+            let y = slot + (high.max(least) - high) / 2.0;
             draw_band(&mut scene, flow, left, (y, at_heater), high);
             draw_label(&mut scene, flow, left, y + high / 2.0, whole, marks);
-            slot += high.max(SLOT);
+            slot += high.max(least);
             at_heater += high;
         }
     }
@@ -137,18 +148,23 @@ pub fn energy_flow(data: &EnergyFlow, marks: &Marks) -> Result<Picture, ChartErr
     scene.area(&block, INK, 1.0);
     let set = Type::new(BODY, Weight::Bold, INK);
     let name = font::fit(named(&data.heater), set.size, set.weight, 260.0);
-    let above = (NODES[1] + NODE / 2.0, heater[0].1 - 10.0);
-    scene.text(&name, above, Anchor::Middle, set);
+    let above = (nodes[1] + NODE / 2.0, heater[0].1 - 10.0);
+    if scene.narrow() {
+        scene.plate(&name, above, Anchor::Middle, set);
+    } else {
+        scene.text(&name, above, Anchor::Middle, set);
+    }
     Ok(Picture::new(title, alt(data, &sides, marks), scene))
 }
 
 /// Draws a flow's node and its band to or from the heater; `ys` are the upper edges at the node and at the heater.
 fn draw_band(scene: &mut Scene, flow: &Flow, left: bool, ys: (f64, f64), high: f64) {
+    let nodes = nodes(scene);
     let (colour, hatch) = flow.kind.look();
     let (node, from, to) = if left {
-        (NODES[0], NODES[0] + NODE, NODES[1])
+        (nodes[0], nodes[0] + NODE, nodes[1])
     } else {
-        (NODES[2], NODES[2], NODES[1] + NODE)
+        (nodes[2], nodes[2], nodes[1] + NODE)
     };
     // A smooth step from one height to the other.
     let edge = |by: f64| -> Vec<Point> {
@@ -174,19 +190,26 @@ fn draw_band(scene: &mut Scene, flow: &Flow, left: bool, ys: (f64, f64), high: f
 }
 
 fn draw_label(scene: &mut Scene, flow: &Flow, left: bool, middle: f64, whole: f64, marks: &Marks) {
+    let nodes = nodes(scene);
     let (x, anchor, room) = if left {
-        (NODES[0] - 10.0, Anchor::End, NODES[0] - 10.0 - MARGIN)
+        (nodes[0] - 10.0, Anchor::End, nodes[0] - 10.0 - MARGIN)
     } else {
-        let x = NODES[2] + NODE + 10.0;
-        (x, Anchor::Start, WIDTH - MARGIN - x)
+        let x = nodes[2] + NODE + 10.0;
+        (x, Anchor::Start, scene.width - MARGIN - x)
     };
-    let name = Type::new(BODY, Weight::Regular, INK);
-    let text = font::fit(named(&flow.label), name.size, name.weight, room);
-    scene.text(&text, (x, middle - 2.0), anchor, name);
+    let most = if scene.narrow() { 2 } else { 1 };
+    let size = if scene.narrow() { SMALL } else { BODY };
+    let name = Type::new(size, Weight::Regular, INK);
+    let lines = font::wrap(named(&flow.label), name.size, name.weight, room, most);
+    let mut y = middle - 2.0 - LINE / 2.0 * (lines.len() as f64 - 1.0);
+    for line in &lines {
+        scene.text(line, (x, y), anchor, name);
+        y += LINE;
+    }
     let amount = font::fit(&amount(flow, whole, marks), SMALL, Weight::Regular, room);
     scene.text(
         &amount,
-        (x, middle + 15.0),
+        (x, y),
         anchor,
         Type::new(SMALL, Weight::Regular, MUTED),
     );
@@ -199,7 +222,12 @@ fn amount(flow: &Flow, whole: f64, marks: &Marks) -> String {
     } else {
         marks.number(percent, 0)
     };
-    format!("{} kWh, {share} %", marks.number(flow.kwh, 0))
+    let kwh = marks.number(flow.kwh, 0);
+    if marks.phone {
+        format!("{kwh} kWh")
+    } else {
+        format!("{kwh} kWh, {share} %")
+    }
 }
 
 fn alt(data: &EnergyFlow, sides: &[Vec<&Flow>; 2], marks: &Marks) -> String {

@@ -91,6 +91,12 @@ pub(crate) fn glyphs(text: &str, weight: Weight) -> Vec<(u16, f32)> {
         .collect()
 }
 
+/// Whether the font has a sign for `c`.
+#[cfg(feature = "pdf")]
+pub(crate) fn has(c: char) -> bool {
+    face(Weight::Regular).is_ok_and(|font| font.glyph_id(c).0 != 0)
+}
+
 /// `text` as it may be drawn: one line, without control characters, without marks that would turn the reading
 /// direction of what follows, without characters that XML forbids.
 pub fn clean(text: &str) -> String {

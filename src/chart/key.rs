@@ -4,12 +4,12 @@ use super::font::{self, Weight};
 use super::geometry::Rect;
 use super::label::{Anchor, SMALL, TITLE, Type};
 use super::palette::{AXIS, Colour, Dash, Hatch, INK, Series};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 
 impl Scene {
     /// Writes title and subtitle at the top left; gives back the y below which there is room.
     pub(crate) fn heading(&mut self, title: &str, subtitle: &str) -> f64 {
-        let room = WIDTH - 2.0 * MARGIN;
+        let room = self.width - 2.0 * MARGIN;
         let mut y = MARGIN;
         for (text, set, lines) in [
             (title, Type::new(TITLE, Weight::Bold, INK), 2),

@@ -6,7 +6,7 @@ use super::key::Swatch;
 use super::layers::{self, Layer};
 use super::numbers::{self, Marks};
 use super::palette::{CORAL, Colour, Dash, Hatch, INK, OCHRE, TEAL};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named, sentence};
 
 const PICTURE: &str = "load duration";
@@ -50,7 +50,7 @@ pub fn load_duration(data: &LoadDuration, marks: &Marks) -> Result<Picture, Char
         "{} Hour by hour, the largest load first.",
         sentence(&data.system, 320.0)
     );
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let below = scene.heading(title, &subtitle);
     let sums = energy(&loads);
     let texts: Vec<String> = (0..3)
@@ -73,8 +73,7 @@ pub fn load_duration(data: &LoadDuration, marks: &Marks) -> Result<Picture, Char
         .iter()
         .map(|&i| (Swatch::Area(LAYERS[i].1, LAYERS[i].2), &texts[i]))
         .collect();
-    let top = scene.key(&entries, MARGIN, below, WIDTH - 2.0 * MARGIN) + 4.0;
-    scene.height = top + PLOT + 6.0;
+    let top = scene.key(&entries, MARGIN, below, scene.width - 2.0 * MARGIN) + 4.0;
 
     let peak = loads
         .iter()
@@ -88,12 +87,16 @@ pub fn load_duration(data: &LoadDuration, marks: &Marks) -> Result<Picture, Char
         marks,
     );
     let two = hours > TOP_HOURS * 2;
-    let split = if two {
-        MARGIN + 0.60 * (WIDTH - 2.0 * MARGIN)
+    // Side by side, or on a phone one below the other.
+    let (beside, below) = (two && !scene.narrow(), two && scene.narrow());
+    let lower = if below { top + PLOT + 6.0 } else { top };
+    scene.height = lower + PLOT + 6.0;
+    let split = if beside {
+        MARGIN + 0.60 * (scene.width - 2.0 * MARGIN)
     } else {
-        WIDTH - MARGIN
+        scene.width - MARGIN
     };
-    let panel = |left: f64, right: f64, title: &str, end: usize, wanted: usize| {
+    let panel = |(left, top): (f64, f64), right: f64, title: &str, end: usize, wanted: usize| {
         Frame::inside(
             Rect {
                 left,
@@ -105,11 +108,12 @@ pub fn load_duration(data: &LoadDuration, marks: &Marks) -> Result<Picture, Char
             y.clone(),
         )
     };
-    let whole = panel(MARGIN, split, "Hours, largest load first", hours, 5);
+    let whole = panel((MARGIN, top), split, "Hours, largest load first", hours, 5);
     draw_panel(&mut scene, &whole, &loads);
     if two {
         let first = format!("The {TOP_HOURS} hours of largest load");
-        let close = panel(split + 16.0, WIDTH - MARGIN, &first, TOP_HOURS, 3);
+        let left = if beside { split + 16.0 } else { MARGIN };
+        let close = panel((left, lower), scene.width - MARGIN, &first, TOP_HOURS, 3);
         draw_panel(&mut scene, &close, &loads[..TOP_HOURS]);
     }
     Ok(Picture::new(

@@ -82,7 +82,7 @@ pub use energy_flow::{EnergyFlow, Flow, FlowKind, energy_flow};
 pub use font::clean as plain_line;
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
 #[cfg(feature = "pdf")]
-pub(crate) use font::{Weight, glyphs, width as text_width};
+pub(crate) use font::{Weight, glyphs, has as font_has, width as text_width};
 pub use geometry::Rect;
 pub use label::Label;
 pub use load_duration::{LoadDuration, load_duration};
@@ -95,7 +95,7 @@ pub use pressure_enthalpy::{PressureEnthalpy, StatePoint, pressure_enthalpy};
 pub use saving_odds::{ChoiceSaving, SavingOdds, saving_odds};
 #[cfg(feature = "pdf")]
 pub(crate) use scene::Item;
-pub use scene::WIDTH;
+pub use scene::{PHONE_WIDTH, WIDTH};
 pub use signature::{MeterPoint, SignaturePlot, signature_plot};
 pub use spread_shares::{SpreadShares, UnknownShare, spread_shares};
 pub use swings::{Swing, Swings, swings};
@@ -148,6 +148,18 @@ impl Picture {
     /// Every text of the picture with the room it takes.
     pub fn labels(&self) -> &[Label] {
         &self.scene.labels
+    }
+
+    /// Whether every text stands on the canvas and clear of all others.
+    pub fn labels_are_apart(&self) -> bool {
+        let canvas = self.canvas();
+        let labels = self.labels();
+        labels.iter().enumerate().all(|(i, label)| {
+            canvas.contains(&label.area)
+                && labels[i + 1..]
+                    .iter()
+                    .all(|other| !label.area.overlaps(&other.area))
+        })
     }
 
     /// What is painted, in order, for an output outside this room.

@@ -8,7 +8,7 @@ use super::key::Swatch;
 use super::label::{Anchor, SMALL, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{AXIS, AZURE, BROWN, Colour, Hatch, INK, NAVY};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "month by month";
@@ -40,6 +40,8 @@ pub struct MonthlySystem {
 }
 
 const BLOCK: f64 = 168.0;
+/// Height of the line of sums where it stands below the name.
+const SUMS: f64 = 20.0;
 const PLOT: f64 = 92.0;
 const MONTH: Type = Type::new(11.0, Weight::Regular, super::palette::MUTED);
 
@@ -51,7 +53,7 @@ const MONTH: Type = Type::new(11.0, Weight::Regular, super::palette::MUTED);
 pub fn monthly(data: &Monthly, marks: &Marks) -> Result<Picture, ChartError> {
     check(data)?;
     let title = "Month by month";
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let below = scene.heading(
         title,
         "Cost with all charges, and energy bought, by system. All systems share one scale.",
@@ -61,8 +63,11 @@ pub fn monthly(data: &Monthly, marks: &Marks) -> Result<Picture, ChartError> {
         (Swatch::Area(AZURE, Hatch::Plain), "electricity"),
         (Swatch::Area(BROWN, Hatch::Rising), "fuel"),
     ];
-    let top = scene.key(&entries, MARGIN, below, WIDTH - 2.0 * MARGIN) + 4.0;
-    scene.height = top + BLOCK * data.systems.len() as f64 + 8.0;
+    let top = scene.key(&entries, MARGIN, below, scene.width - 2.0 * MARGIN) + 4.0;
+    // On a phone the sums stand below the name.
+    let below_name = if scene.narrow() { SUMS } else { 0.0 };
+    let block = BLOCK + below_name;
+    scene.height = top + block * data.systems.len() as f64 + 8.0;
 
     let ends = |values: &mut dyn Iterator<Item = f64>| {
         let (low, high) = values.fold((0.0_f64, 0.0_f64), |(l, h), v| (l.min(v), h.max(v)));
@@ -80,12 +85,19 @@ pub fn monthly(data: &Monthly, marks: &Marks) -> Result<Picture, ChartError> {
     let energy_axis = Axis::linear("Energy bought, kWh", energy.0, energy.1, 3, marks);
 
     for (i, system) in data.systems.iter().enumerate() {
-        let y = top + BLOCK * i as f64;
+        let y = top + block * i as f64;
         let set = Type::new(SMALL, Weight::Regular, INK);
         let sums = sums(data, system, marks);
-        let sums = font::fit(&sums, set.size, set.weight, WIDTH - 2.0 * MARGIN - 200.0);
-        scene.text(&sums, (WIDTH - MARGIN - 12.0, y + 16.0), Anchor::End, set);
-        let room = WIDTH - 3.0 * MARGIN - 16.0 - set.width(&sums);
+        let full = scene.width - 2.0 * MARGIN;
+        let room = if scene.narrow() {
+            let sums = font::fit(&sums, set.size, set.weight, full);
+            scene.text(&sums, (MARGIN, y + 16.0 + SUMS), Anchor::Start, set);
+            full
+        } else {
+            let sums = font::fit(&sums, set.size, set.weight, full - 200.0);
+            scene.text(&sums, (MARGIN + full - 12.0, y + 16.0), Anchor::End, set);
+            full - MARGIN - 16.0 - set.width(&sums)
+        };
         draw_name(
             &mut scene,
             &system.label,
@@ -93,7 +105,8 @@ pub fn monthly(data: &Monthly, marks: &Marks) -> Result<Picture, ChartError> {
             y + 16.0,
             room.max(80.0),
         );
-        let middle = WIDTH / 2.0 + 4.0;
+        let y = y + below_name;
+        let middle = scene.width / 2.0 + 4.0;
         let left = panel(data, MARGIN, middle - 6.0, y + 22.0, &cost_axis);
         columns(
             &mut scene,
@@ -101,7 +114,13 @@ pub fn monthly(data: &Monthly, marks: &Marks) -> Result<Picture, ChartError> {
             data,
             &[(&system.cost, NAVY, Hatch::Plain)],
         );
-        let right = panel(data, middle + 6.0, WIDTH - MARGIN, y + 22.0, &energy_axis);
+        let right = panel(
+            data,
+            middle + 6.0,
+            scene.width - MARGIN,
+            y + 22.0,
+            &energy_axis,
+        );
         let layers = [
             (&system.electricity_kwh, AZURE, Hatch::Plain),
             (&system.fuel_kwh, BROWN, Hatch::Rising),
@@ -141,11 +160,15 @@ fn check(data: &Monthly) -> Result<(), ChartError> {
 }
 
 fn panel(data: &Monthly, left: f64, right: f64, top: f64, axis: &Axis) -> Frame {
+    /// Narrowest panel in which every month has its letter, points.
+    const ALL_MONTHS: f64 = 220.0;
     let n = data.months.len() as f64;
+    let every = if right - left < ALL_MONTHS { 3 } else { 1 };
     let names = data
         .months
         .iter()
         .enumerate()
+        .step_by(every)
         .map(|(i, m)| (i as f64, m.clone()))
         .collect();
     let mut frame = Frame::inside(

@@ -7,7 +7,7 @@ use super::font::{self, Weight};
 use super::geometry::Point;
 use super::label::{Anchor, Label};
 use super::palette::Colour;
-use super::scene::{Item, Scene, WIDTH};
+use super::scene::{Item, Scene};
 use super::{ChartError, Picture};
 use ab_glyph::{Font as _, point};
 use plotters::backend::{BitMapBackend, DrawingBackend, SVGBackend};
@@ -35,7 +35,7 @@ trait Output: DrawingBackend {
 pub(crate) fn svg(picture: &Picture, with_fonts: bool) -> Result<String, ChartError> {
     let scene = &picture.scene;
     let size = (
-        (WIDTH * SVG_UNITS) as u32,
+        (scene.width * SVG_UNITS) as u32,
         (scene.height * SVG_UNITS).ceil() as u32,
     );
     let mut drawn = String::new();
@@ -60,7 +60,7 @@ pub(crate) fn svg(picture: &Picture, with_fonts: bool) -> Result<String, ChartEr
     Ok(format!(
         "<svg xmlns=\"http://www.w3.org/2000/svg\" role=\"img\" width=\"{}\" height=\"{}\" viewBox=\"0 0 {} {}\" \
          stroke-linejoin=\"round\">\n<title>{}</title>\n<desc>{}</desc>\n{style}{}",
-        WIDTH,
+        scene.width,
         scene.height.ceil(),
         size.0,
         size.1,
@@ -74,7 +74,7 @@ pub(crate) fn svg(picture: &Picture, with_fonts: bool) -> Result<String, ChartEr
 pub(crate) fn png(picture: &Picture) -> Result<Vec<u8>, ChartError> {
     let scene = &picture.scene;
     let (width, height) = (
-        WIDTH as u32 * PNG_PIXELS,
+        scene.width as u32 * PNG_PIXELS,
         scene.height.ceil() as u32 * PNG_PIXELS,
     );
     let (drawn_width, drawn_height) = (width * OVERSAMPLING, height * OVERSAMPLING);
@@ -127,7 +127,7 @@ fn average(drawn: &[u8], width: usize, height: usize) -> Vec<u8> {
 
 fn replay<O: Output>(scene: &Scene, output: &mut O, scale: f64) -> Result<(), ChartError> {
     let pixel = |p: Point| ((p.0 * scale).round() as i32, (p.1 * scale).round() as i32);
-    let canvas = [pixel((0.0, 0.0)), pixel((WIDTH, scene.height.ceil()))];
+    let canvas = [pixel((0.0, 0.0)), pixel((scene.width, scene.height.ceil()))];
     let white = RGBColor(255, 255, 255).filled();
     output
         .draw_rect(canvas[0], canvas[1], &white, true)

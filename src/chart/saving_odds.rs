@@ -5,7 +5,7 @@ use super::frame::Axis;
 use super::label::{Anchor, BODY, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{AXIS, CORAL, Colour, GRID, Hatch, INK, NAVY};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "odds of saving";
@@ -69,7 +69,7 @@ pub fn saving_odds(data: &SavingOdds, marks: &Marks) -> Result<Picture, ChartErr
 
     let title = "How sure the saving is";
     let subtitle = "Saving of a year against today's system in every sample; right of the line the choice is cheaper.";
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, subtitle) + 6.0;
     let bottom = top + ROW * data.choices.len() as f64 + 6.0;
     scene.height = bottom + 52.0;
@@ -82,7 +82,7 @@ pub fn saving_odds(data: &SavingOdds, marks: &Marks) -> Result<Picture, ChartErr
         7,
         marks,
     );
-    let (left, right) = (MARGIN + 22.0, WIDTH - MARGIN - 22.0);
+    let (left, right) = (MARGIN + 22.0, scene.width - MARGIN - 22.0);
     let at = |v: f64| left + (v - axis.low) / (axis.high - axis.low) * (right - left);
     for (value, text) in &axis.ticks {
         scene.line(&[(at(*value), top), (at(*value), bottom)], GRID, 1.0);
@@ -136,10 +136,10 @@ pub fn saving_odds(data: &SavingOdds, marks: &Marks) -> Result<Picture, ChartErr
         let line = top + ROW * i as f64 + 20.0;
         let chance = choice.chance_text();
         let bold = Type::new(BODY, Weight::Bold, INK);
-        let room = WIDTH - 2.0 * MARGIN - bold.width(&chance) - 28.0;
+        let room = scene.width - 2.0 * MARGIN - bold.width(&chance) - 28.0;
         let name = font::fit(named(&choice.label), BODY, Weight::Regular, room);
         scene.plate(&name, (MARGIN, line), Anchor::Start, Type::body());
-        scene.plate(&chance, (WIDTH - MARGIN, line), Anchor::End, bold);
+        scene.plate(&chance, (scene.width - MARGIN, line), Anchor::End, bold);
     }
     Ok(Picture::new(title, alt(data, marks), scene))
 }

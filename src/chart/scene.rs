@@ -6,12 +6,20 @@
 
 use super::geometry::{self, Point, Rect};
 use super::label::Label;
+use super::numbers::Marks;
 use super::palette::{Colour, Dash, Hatch, Mark, Series, WHITE};
 
 /// Width of every picture in points; heights follow the content. At 180 mm on paper a point is 0.25 mm.
 pub const WIDTH: f64 = 720.0;
+/// Width of the canvas for a page as wide as a phone: letters stay as large, so there is less room beside them.
+pub const PHONE_WIDTH: f64 = 390.0;
 /// Free margin around everything.
 pub(crate) const MARGIN: f64 = 18.0;
+
+/// Width of the canvas for the page that `marks` is for.
+pub(crate) fn width_of(marks: &Marks) -> f64 {
+    if marks.phone { PHONE_WIDTH } else { WIDTH }
+}
 
 /// One thing to paint; later ones lie above earlier ones.
 #[derive(Debug, Clone)]
@@ -37,6 +45,7 @@ pub(crate) enum Item {
 /// A picture in the making.
 #[derive(Debug, Clone)]
 pub(crate) struct Scene {
+    pub width: f64,
     pub height: f64,
     pub items: Vec<Item>,
     pub labels: Vec<Label>,
@@ -46,17 +55,36 @@ impl Scene {
     /// An empty canvas of the common width.
     pub(crate) fn new(height: f64) -> Self {
         Self {
+            width: WIDTH,
             height,
             items: Vec::new(),
             labels: Vec::new(),
         }
     }
 
+    /// An empty canvas for the page that `marks` is for; its height is set when it is known.
+    pub(crate) fn of(marks: &Marks) -> Self {
+        Self {
+            width: width_of(marks),
+            ..Self::new(f64::MAX)
+        }
+    }
+
+    /// Room for names beside a plot: what is wanted, and on a phone no more than leaves a plot.
+    pub(crate) fn aside(&self, wanted: f64) -> f64 {
+        wanted.min(0.36 * self.width)
+    }
+
+    /// Whether the canvas is as wide as a phone.
+    pub(crate) fn narrow(&self) -> bool {
+        self.width < WIDTH
+    }
+
     pub(crate) fn canvas(&self) -> Rect {
         Rect {
             left: 0.0,
             top: 0.0,
-            right: WIDTH,
+            right: self.width,
             bottom: self.height,
         }
     }

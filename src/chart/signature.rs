@@ -7,7 +7,7 @@ use super::key::Swatch;
 use super::label::{SMALL, Type};
 use super::numbers::Marks;
 use super::palette::{BROWN, CORAL, Dash, Hatch, INK, Mark, NAVY, Series, WHITE};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene, width_of};
 use super::{ChartError, Picture, finite};
 
 const PICTURE: &str = "energy signature";
@@ -71,7 +71,7 @@ pub fn signature_plot(data: &SignaturePlot, marks: &Marks) -> Result<Picture, Ch
         marks.number(data.heat_loss_95.0, 0),
         marks.number(data.heat_loss_95.1, 0)
     );
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let below = scene.heading(title, &subtitle);
     let mut entries = vec![
         (Swatch::Point(USUAL), "between two readings"),
@@ -80,7 +80,7 @@ pub fn signature_plot(data: &SignaturePlot, marks: &Marks) -> Result<Picture, Ch
     if data.points.iter().any(|point| point.odd) {
         entries.insert(1, (Swatch::Point(ODD), "odd, kept in the fit"));
     }
-    let top = scene.key(&entries, MARGIN, below, WIDTH - 2.0 * MARGIN);
+    let top = scene.key(&entries, MARGIN, below, scene.width - 2.0 * MARGIN);
     scene.height = top + PLOT + 6.0;
     let ends = ends(data);
     let frame = frame(data, top, ends, marks);
@@ -164,7 +164,7 @@ fn frame(data: &SignaturePlot, top: f64, ends: (f64, f64), marks: &Marks) -> Fra
     let outer = Rect {
         left: MARGIN,
         top,
-        right: WIDTH - MARGIN,
+        right: width_of(marks) - MARGIN,
         bottom: top + PLOT,
     };
     Frame::inside(

@@ -5,7 +5,7 @@ use super::frame::Axis;
 use super::label::{Anchor, BODY, Type};
 use super::numbers::Marks;
 use super::palette::{AXIS, GRID, INK, PERIWINKLE};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "shares of the spread";
@@ -58,13 +58,13 @@ pub fn spread_shares(data: &SpreadShares, marks: &Marks) -> Result<Picture, Char
         330.0,
     );
     let subtitle = format!("{outcome}: share of its spread that knowing one thing takes away.");
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let top = scene.heading(title, &subtitle) + 6.0;
     let bottom = top + ROW * unknowns.len() as f64 + 6.0;
     scene.height = bottom + 52.0;
     let highest = all().fold(0.05, f64::max) * 100.0;
     let axis = Axis::linear("Share of the spread, %", 0.0, highest, 6, marks);
-    let (left, right) = (MARGIN + 14.0, WIDTH - MARGIN - 22.0);
+    let (left, right) = (MARGIN + 14.0, scene.width - MARGIN - 22.0);
     let at =
         |share: f64| left + (share * 100.0 - axis.low) / (axis.high - axis.low) * (right - left);
     for (value, text) in &axis.ticks {
@@ -84,10 +84,10 @@ pub fn spread_shares(data: &SpreadShares, marks: &Marks) -> Result<Picture, Char
         let (first, last) = (line + 8.0, line + 20.0);
         let figure = figure(unknown);
         let bold = Type::new(BODY, Weight::Bold, INK);
-        let room = WIDTH - 2.0 * MARGIN - bold.width(&figure) - 28.0;
+        let room = scene.width - 2.0 * MARGIN - bold.width(&figure) - 28.0;
         let name = font::fit(named(&unknown.label), BODY, Weight::Regular, room);
         scene.plate(&name, (MARGIN, line), Anchor::Start, Type::body());
-        scene.plate(&figure, (WIDTH - MARGIN, line), Anchor::End, bold);
+        scene.plate(&figure, (scene.width - MARGIN, line), Anchor::End, bold);
         let corners = [
             (left, first),
             (at(unknown.share), first),

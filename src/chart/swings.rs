@@ -5,7 +5,7 @@ use super::frame::Axis;
 use super::label::{Anchor, BODY, SMALL, Type};
 use super::numbers::{Marks, money_unit};
 use super::palette::{AXIS, Dash, GRID, INK, MUTED, NAVY, WHITE};
-use super::scene::{MARGIN, Scene, WIDTH};
+use super::scene::{MARGIN, Scene};
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "swings";
@@ -72,7 +72,7 @@ pub fn swings(data: &Swings, marks: &Marks) -> Result<Picture, ChartError> {
     let title = "What would change the answer";
     let outcome = font::fit(named(&data.outcome), SMALL, Weight::Regular, 420.0);
     let subtitle = format!("{outcome}, when one thing changes and all others stay as they are.");
-    let mut scene = Scene::new(f64::MAX);
+    let mut scene = Scene::of(marks);
     let below = scene.heading(title, &subtitle);
     let top = draw_key(&mut scene, below) + 16.0;
     let bottom = top + ROW * levers.len() as f64 + 6.0;
@@ -93,7 +93,7 @@ pub fn swings(data: &Swings, marks: &Marks) -> Result<Picture, ChartError> {
         6,
         marks,
     );
-    let (left, right) = (MARGIN + SIDE, WIDTH - MARGIN - SIDE);
+    let (left, right) = (MARGIN + SIDE, scene.width - MARGIN - SIDE);
     let at = |v: f64| left + (v - axis.low) / (axis.high - axis.low) * (right - left);
 
     for (value, text) in &axis.ticks {
@@ -152,7 +152,7 @@ fn draw_lever(scene: &mut Scene, lever: &Swing, row: f64, at: &dyn Fn(f64) -> f6
         named(&lever.label),
         set.size,
         set.weight,
-        WIDTH - 2.0 * MARGIN,
+        scene.width - 2.0 * MARGIN,
     );
     scene.plate(&name, (MARGIN, row + 16.0), Anchor::Start, set);
     let y = row + 34.0;
@@ -165,7 +165,7 @@ fn draw_lever(scene: &mut Scene, lever: &Swing, row: f64, at: &dyn Fn(f64) -> f6
         let room = if anchor == Anchor::End {
             x - 4.0
         } else {
-            WIDTH - 4.0 - x
+            scene.width - 4.0 - x
         };
         let text = font::fit(text, small.size, small.weight, room);
         scene.plate(&text, (x, y + 4.6), anchor, small);

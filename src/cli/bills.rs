@@ -5,7 +5,8 @@ use std::path::PathBuf;
 use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
 use crate::answer::bills::BillsAnswer;
 use crate::brief::Brief;
-use crate::chart::{Marks, MeterPoint, SignaturePlot, signature_plot};
+use crate::chart::Marks;
+use crate::report::signature_picture;
 use crate::signature::Signature;
 
 /// Heat-loss coefficient, base temperature and base load from meter readings.
@@ -67,27 +68,8 @@ fn picture(path: &std::path::Path, signature: &Signature) -> Result<Vec<u8>, Fai
         path: path.to_owned(),
         reason: reason.to_string(),
     };
-    let data = SignaturePlot {
-        points: signature
-            .points
-            .iter()
-            .map(|point| MeterPoint {
-                outdoor_c: point.mean_c,
-                kwh_per_day: point.kwh_per_day,
-                name: format!("{} to {}", point.from, point.to),
-                odd: point.odd,
-            })
-            .collect(),
-        base_load_kwh_per_day: signature.base_load_kwh_per_day.value,
-        slope_kwh_per_k_day: signature.slope_kwh_per_k_day,
-        base_temperature_c: signature.base_temperature_c.value,
-        heat_loss_w_per_k: signature.heat_loss_w_per_k.value,
-        heat_loss_95: (
-            signature.heat_loss_w_per_k.low,
-            signature.heat_loss_w_per_k.high,
-        ),
-    };
-    let picture = signature_plot(&data, &Marks::default()).map_err(|error| cannot(&error))?;
+    let picture =
+        signature_picture(signature, &Marks::default()).map_err(|error| cannot(&error))?;
     let is = |wanted: &str| {
         path.extension()
             .is_some_and(|extension| extension.eq_ignore_ascii_case(wanted))

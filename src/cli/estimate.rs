@@ -6,7 +6,7 @@ use std::path::{Path, PathBuf};
 use super::progress::Progress;
 use super::sampling::draw;
 use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
-use crate::answer::odds::{OddsSummary, summary};
+use crate::answer::odds::summary;
 use crate::answer::{Estimate, compare_patterns, compose};
 use crate::brief::{Brief, DEFAULTS};
 use crate::chart::ChartError;
@@ -16,10 +16,10 @@ use crate::problem::Problems;
 #[cfg(feature = "pdf")]
 use crate::report::report_pdf;
 use crate::report::{
-    Drawn, Material, accounts_text, estimate_text, home_text, ledger_csv, patterns_text, pictures,
-    report_html,
+    Drawn, Material, accounts_text, estimate_text, home_text, ledger_csv, odds_pictures,
+    patterns_text, pictures, report_html,
 };
-use crate::study::odds::Sampler;
+use crate::study::odds::{Sample, Sampler};
 use crate::study::{Outcome, bills};
 use crate::year::Ledger;
 
@@ -107,7 +107,10 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
     progress.at("break-even");
     let mut estimate = compose(&brief.case, &outcomes, &brief.told)?;
-    estimate.odds = odds_in_brief(&brief, args.samples as usize)?;
+    let sampled = sampled(&brief, args.samples as usize)?;
+    estimate.odds = sampled
+        .as_ref()
+        .and_then(|(sampler, blocks)| summary(&brief.case, sampler, blocks));
     if args.bills {
         estimate = estimate.with_bills(&brief.case, &outcomes)?;
     }
@@ -121,9 +124,12 @@ pub fn run(args: &Args) -> Result<(), Failure> {
             outcomes: &outcomes,
             ledgers: &ledgers,
             estimate: &estimate,
+            signature: brief.told.bills.as_ref().map(|bills| &bills.signature),
             locale: brief.locale,
         };
-        let files = files(folder, &material).map_err(|error| cannot_write(folder, &*error))?;
+        let blocks = sampled.as_ref().map(|(_, blocks)| blocks.as_slice());
+        let files =
+            files(folder, &material, blocks).map_err(|error| cannot_write(folder, &*error))?;
         write_files(&files, args.force)?;
     }
     progress.done();
@@ -140,18 +146,18 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
 }
 
-/// The odds of every choice from a modest sample; nothing where none was wished for.
-fn odds_in_brief(brief: &Brief, samples: usize) -> Result<Option<OddsSummary>, Problems> {
+/// A modest sample for the odds of every choice; nothing where none was wished for.
+fn sampled(brief: &Brief, samples: usize) -> Result<Option<(Sampler, Vec<Vec<Sample>>)>, Problems> {
     /// Samples of a block.
     const BLOCK: usize = 20;
     /// The same seed as that of `odds`; the same estimate gives the same bytes.
     const SEED: u64 = 1;
-    if samples == 0 {
+    if samples == 0 || brief.case.contenders.len() < 2 {
         return Ok(None);
     }
     let sampler = Sampler::new(brief.case.clone(), brief.doubts.clone(), SEED, BLOCK)?;
     let drawing = draw(&sampler, samples.div_ceil(BLOCK), None, None)?;
-    Ok(summary(&brief.case, &sampler, &drawing.blocks))
+    Ok(Some((sampler, drawing.blocks)))
 }
 
 /// The bills of every system and what its meters should read.
@@ -164,7 +170,11 @@ fn accounts(estimate: &Estimate, brief: &Brief, outcomes: &[Outcome]) -> Result<
 }
 
 /// Everything that goes into the folder.
-fn files(folder: &Path, material: &Material<'_>) -> Result<Vec<NewFile>, Box<dyn Error>> {
+fn files(
+    folder: &Path,
+    material: &Material<'_>,
+    samples: Option<&[Vec<Sample>]>,
+) -> Result<Vec<NewFile>, Box<dyn Error>> {
     let case = material.case;
     let mut files = vec![NewFile::new(
         folder.join(RESULT),
@@ -177,13 +187,20 @@ fn files(folder: &Path, material: &Material<'_>) -> Result<Vec<NewFile>, Box<dyn
         let name = format!("ledger-{}-{label}.csv", i + 1);
         files.push(NewFile::new(folder.join(name), content));
     }
-    let drawn = pictures(material)?;
+    let mut drawn = pictures(material)?;
+    if let Some(blocks) = samples {
+        drawn.extend(odds_pictures(case, blocks, &material.locale)?);
+    }
     for (drawn, png) in drawn.iter().zip(pngs(&drawn)?) {
         let path = |ending: &str| folder.join(format!("{}.{ending}", drawn.name));
         files.push(NewFile::new(path("svg"), drawn.picture.svg()?));
         files.push(NewFile::new(path("png"), png));
     }
-    let page = report_html(material, &drawn)?;
+    let phone = pictures(&Material {
+        locale: material.locale.on_a_phone(),
+        ..*material
+    })?;
+    let page = report_html(material, &drawn, &phone)?;
     files.push(NewFile::new(folder.join(REPORT), page));
     #[cfg(feature = "pdf")]
     files.push(NewFile::new(

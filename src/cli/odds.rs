@@ -6,7 +6,7 @@ use super::sampling::{Stop, draw};
 use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
 use crate::answer::odds::{OddsAnswer, Wish, odds};
 use crate::brief::Brief;
-use crate::report::{Drawn, odds_pictures, odds_text, samples_csv};
+use crate::report::{Drawn, odds_pictures, odds_text, samples_csv, spread_picture};
 use crate::study::odds::{Sample, Sampler};
 
 /// Samples of a block: whole blocks are drawn, their scatter gives the sampling errors.
@@ -102,7 +102,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
     match args.format {
         Format::Json => print_json(&answer)?,
-        Format::Text => print(&odds_text(&answer))?,
+        Format::Text => print(&odds_text(&answer, &brief.locale.marks))?,
     }
     if drawing.interrupted {
         return Err(Failure::Interrupted {
@@ -127,7 +127,9 @@ fn files(
             samples_csv(&brief.case, sampler, blocks)?,
         ),
     ];
-    for Drawn { name, picture, .. } in odds_pictures(answer, &brief.case, blocks, &brief.locale)? {
+    let mut drawn = odds_pictures(&brief.case, blocks, &brief.locale)?;
+    drawn.extend(spread_picture(answer, &brief.locale)?);
+    for Drawn { name, picture, .. } in drawn {
         let path = |ending: &str| folder.join(format!("{name}.{ending}"));
         files.push(NewFile::new(path("svg"), picture.svg()?));
         files.push(NewFile::new(path("png"), picture.png()?));

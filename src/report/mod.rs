@@ -32,11 +32,11 @@ pub use ground::ground_text;
 pub use home::{home_text, patterns_text};
 pub use ledger::{ledger_csv, ledger_legend};
 pub use odds::odds_text;
-pub use odds_pictures::{odds_pictures, samples_csv};
+pub use odds_pictures::{odds_pictures, samples_csv, spread_picture};
 pub use page::report_html;
 #[cfg(feature = "pdf")]
 pub use pdf::report_pdf;
-pub use pictures::{Drawn, Material, pictures};
+pub use pictures::{Drawn, Material, pictures, signature_picture};
 pub use study::study_text;
 pub use table::{plain_table, plain_table_within};
 pub use text::estimate_text;

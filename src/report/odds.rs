@@ -4,32 +4,41 @@ use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
 use crate::answer::odds::OddsAnswer;
 use crate::answer::short;
+use crate::locale::Marks;
 
-/// The odds as text for a terminal of 80 columns or more.
-pub fn odds_text(answer: &OddsAnswer) -> String {
+/// The odds as text for a terminal of 80 columns or more, with the marks of a place.
+pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
+    let whole = |value: f64| marks.number(value, 0);
+    let error = |error: Option<f64>| {
+        // A whole percent: the error of an error is large.
+        error.map_or_else(String::new, |error| {
+            format!(" ± {}", whole((error * 100.0).max(1.0)))
+        })
+    };
     let mut blocks: Vec<String> = vec![
         answer
             .choices
             .iter()
-            .map(|choice| wrapped(&choice.sentence, "", "  "))
+            .map(|choice| wrapped(&marks.localized(&choice.sentence), "", "  "))
             .collect::<Vec<_>>()
             .join("\n"),
     ];
     let code = &answer.currency;
     let rows = answer.choices.iter().map(|choice| {
-        let error = choice.chance_error.map_or_else(String::new, |error| {
-            format!(" ± {:.0}", (error * 100.0).max(1.0))
-        });
         vec![
             choice.label.clone(),
-            format!("{:.0}", choice.saving.p10),
-            format!("{:.0}", choice.saving.p50),
-            format!("{:.0}", choice.saving.p90),
+            whole(choice.saving.p10),
+            whole(choice.saving.p50),
+            whole(choice.saving.p90),
             choice.spf_h4.map_or_else(
                 || "–".to_owned(),
-                |spf| format!("{:.1}–{:.1}", spf.p10, spf.p90),
+                |spf| format!("{}–{}", marks.number(spf.p10, 1), marks.number(spf.p90, 1)),
             ),
-            format!("{:.0}{error}", choice.chance_cheaper * 100.0),
+            format!(
+                "{:.0}{}",
+                choice.chance_cheaper * 100.0,
+                error(choice.chance_error)
+            ),
         ]
     });
     let header = [
@@ -44,11 +53,17 @@ pub fn odds_text(answer: &OddsAnswer) -> String {
     if !answer.what_matters.is_empty() {
         let lines = answer.what_matters.iter().map(|one| {
             let turns = one.turns_with.as_ref().map_or_else(
-                || "does not turn the answer alone".to_owned(),
-                |with| format!("turns with {with}"),
+                || "does not turn the answer".to_owned(),
+                |with| format!("turns with {}", marks.localized(with)),
             );
             let swing = match (one.saving_at_low, one.saving_at_high) {
-                (Some(low), Some(high)) => format!("saving {low:.0} to {high:.0} by it alone, "),
+                (Some(low), Some(high)) => {
+                    format!(
+                        "by it alone a saving of {} to {} {code}, ",
+                        whole(low),
+                        whole(high)
+                    )
+                }
                 _ => String::new(),
             };
             let line = format!(
@@ -69,9 +84,7 @@ pub fn odds_text(answer: &OddsAnswer) -> String {
     }
     if !answer.between.is_empty() {
         let lines = answer.between.iter().map(|pair| {
-            let error = pair.chance_error.map_or_else(String::new, |error| {
-                format!(" ± {:.0}", (error * 100.0).max(1.0))
-            });
+            let error = error(pair.chance_error);
             let line = format!(
                 "\"{}\" is cheaper than \"{}\" in {:.0}{error} of 100",
                 pair.label,
@@ -82,13 +95,13 @@ pub fn odds_text(answer: &OddsAnswer) -> String {
         });
         blocks.push(lines.collect::<Vec<_>>().join("\n"));
     }
-    blocks.push(wrapped(&answer.find_out, "", "  "));
+    blocks.push(wrapped(&marks.localized(&answer.find_out), "", "  "));
     let ranges = answer.uncertain.iter().map(|one| {
         let line = format!(
             "{} {} to {} {}: {}",
             one.lever,
-            short(one.p10),
-            short(one.p90),
+            marks.localized(&short(one.p10)),
+            marks.localized(&short(one.p90)),
             one.unit,
             one.from
         );
@@ -105,7 +118,7 @@ pub fn odds_text(answer: &OddsAnswer) -> String {
             answer.blocks,
             answer.seed,
             answer.stopped,
-            short(answer.price_correlation)
+            marks.localized(&short(answer.price_correlation))
         ),
         "",
         "  ",

@@ -1,6 +1,6 @@
 //! The pictures of the odds, and every sample as a row.
 
-use super::pictures::Drawn;
+use super::pictures::{Drawn, drawn};
 use crate::answer::odds::OddsAnswer;
 use crate::chart::{
     ChartError, ChoiceSaving, CostOdds, CostSpread, SavingOdds, SpreadShares, UnknownShare,
@@ -8,88 +8,93 @@ use crate::chart::{
 };
 use crate::locale::Locale;
 use crate::study::Case;
-use crate::study::odds::{Quantiles, Sample, Sampler};
+use crate::study::odds::{Chance, Quantiles, Sample, Sampler};
 
-/// Saving of every choice, cost of every system, and what makes the spread.
+/// Saving of every choice and cost of every system in all samples.
 ///
 /// # Errors
 /// When a picture cannot be drawn.
 pub fn odds_pictures(
-    answer: &OddsAnswer,
     case: &Case,
     blocks: &[Vec<Sample>],
     locale: &Locale,
 ) -> Result<Vec<Drawn>, ChartError> {
     let marks = &locale.marks;
-    let samples = || blocks.iter().flatten();
-    let choices = answer
-        .choices
-        .iter()
-        .enumerate()
-        .map(|(i, choice)| ChoiceSaving {
-            label: choice.label.clone(),
-            saving: samples()
-                .map(|sample| sample.systems[0].cost - sample.systems[i + 1].cost)
-                .collect(),
-            chance_error: choice.chance_error,
-        });
+    let currency = || case.currency.code().to_owned();
+    let systems = || case.contenders.iter().enumerate();
+    let choices = systems().skip(1).map(|(place, contender)| {
+        let saving: Vec<Vec<f64>> = blocks
+            .iter()
+            .map(|block| {
+                let saving = |sample: &Sample| sample.systems[0].cost - sample.systems[place].cost;
+                block.iter().map(saving).collect()
+            })
+            .collect();
+        let chance = Chance::of(saving.iter().map(Vec::as_slice), |saving| saving > 0.0);
+        ChoiceSaving {
+            label: contender.system.label.clone(),
+            saving: saving.concat(),
+            chance_error: chance
+                .map(|chance| chance.error)
+                .filter(|error| error.is_finite()),
+        }
+    });
     let saving = SavingOdds {
-        currency: answer.currency.clone(),
+        currency: currency(),
         choices: choices.collect(),
     };
-    let systems = case
-        .contenders
-        .iter()
-        .enumerate()
-        .filter_map(|(i, contender)| {
-            let costs: Vec<f64> = samples().map(|sample| sample.systems[i].cost).collect();
-            let Quantiles { p10, p50, p90 } = Quantiles::of(&costs)?;
-            Some(CostSpread {
-                label: contender.system.label.clone(),
-                p10,
-                p50,
-                p90,
-            })
-        });
+    let spreads = systems().filter_map(|(place, contender)| {
+        let samples = blocks.iter().flatten();
+        let costs: Vec<f64> = samples.map(|sample| sample.systems[place].cost).collect();
+        let Quantiles { p10, p50, p90 } = Quantiles::of(&costs)?;
+        Some(CostSpread {
+            label: contender.system.label.clone(),
+            p10,
+            p50,
+            p90,
+        })
+    });
     let cost = CostOdds {
-        currency: answer.currency.clone(),
-        systems: systems.collect(),
+        currency: currency(),
+        systems: spreads.collect(),
     };
-    let mut drawn = vec![
-        Drawn {
-            name: "saving_odds".to_owned(),
-            caption:
-                "What each choice saves in every sample; left of the line it is dearer than today."
-                    .to_owned(),
-            picture: saving_odds(&saving, marks)?,
-            narrow: Vec::new(),
-        },
-        Drawn {
-            name: "cost_odds".to_owned(),
-            caption: "Cost of a year of every system, from P10 to P90.".to_owned(),
-            picture: cost_odds(&cost, marks)?,
-            narrow: Vec::new(),
-        },
-    ];
-    if !answer.what_matters.is_empty() {
-        let unknowns = answer.what_matters.iter().map(|one| UnknownShare {
-            label: one.lever.clone(),
-            share: one.share,
-            low: one.lo,
-            high: one.hi,
-        });
-        let shares = SpreadShares {
-            outcome: format!("Saving of {}", answer.about),
-            unknowns: unknowns.collect(),
-        };
-        drawn.push(Drawn {
-            name: "spread_shares".to_owned(),
-            caption: "What makes the spread of the saving, with limits.".to_owned(),
-            picture: spread_shares(&shares, marks)?,
-            narrow: Vec::new(),
-        });
+    Ok(vec![
+        drawn(
+            "saving-odds",
+            "What each choice saves in every sample; left of the line it is dearer than today.",
+            saving_odds(&saving, marks)?,
+        ),
+        drawn(
+            "cost-odds",
+            "Cost of a year of every system: eight samples of ten lie between the ends of its line.",
+            cost_odds(&cost, marks)?,
+        ),
+    ])
+}
+
+/// What makes the spread of the saving; nothing where the sample does not tell.
+///
+/// # Errors
+/// When the picture cannot be drawn.
+pub fn spread_picture(answer: &OddsAnswer, locale: &Locale) -> Result<Option<Drawn>, ChartError> {
+    if answer.what_matters.is_empty() {
+        return Ok(None);
     }
-    Ok(drawn)
+    let unknowns = answer.what_matters.iter().map(|one| UnknownShare {
+        label: one.lever.clone(),
+        share: one.share,
+        low: one.lo,
+        high: one.hi,
+    });
+    let shares = SpreadShares {
+        outcome: format!("Saving of {}", answer.about),
+        unknowns: unknowns.collect(),
+    };
+    Ok(Some(drawn(
+        "spread-shares",
+        "What makes the spread of the saving, with limits.",
+        spread_shares(&shares, &locale.marks)?,
+    )))
 }
 
 /// Every sample as CSV: what each lever was, then what every system came to.

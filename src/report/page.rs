@@ -10,20 +10,35 @@ use super::blocks::{Block, Line, blocks, plain};
 use super::narrow;
 use super::pictures::{Drawn, Material};
 use super::sentences::{FIRST_PAGE, Section, sections};
-use crate::chart;
+use crate::chart::{self, Picture};
 
 const PAGE: &str = include_str!("page.html");
 const STYLE: &str = include_str!("style.css");
 
-/// The report as HTML.
+/// Every picture by its name, and its form for a phone where it has one.
+type Shown<'a> = BTreeMap<&'a str, (&'a Drawn, Option<&'a Picture>)>;
+
+/// The report as HTML; `phone` are the same pictures drawn for a page as wide as a phone.
 ///
 /// # Errors
 /// When a picture cannot be drawn.
-pub fn report_html(material: &Material<'_>, drawn: &[Drawn]) -> Result<String, ReportError> {
+pub fn report_html(
+    material: &Material<'_>,
+    drawn: &[Drawn],
+    phone: &[Drawn],
+) -> Result<String, ReportError> {
     let sections = sections(material, drawn)?;
-    let pictures: BTreeMap<&str, &Drawn> = drawn
+    let narrow: BTreeMap<&str, &Picture> = phone
         .iter()
-        .map(|drawn| (drawn.name.as_str(), drawn))
+        .filter(|drawn| drawn.picture.labels_are_apart())
+        .map(|drawn| (drawn.name.as_str(), &drawn.picture))
+        .collect();
+    let pictures: Shown<'_> = drawn
+        .iter()
+        .map(|drawn| {
+            let name = drawn.name.as_str();
+            (name, (drawn, narrow.get(name).copied()))
+        })
         .collect();
     let (first, rest) = sections.split_at(FIRST_PAGE.min(sections.len()));
     let body = |sections: &[Section], class: &str| -> Result<String, ReportError> {
@@ -66,7 +81,7 @@ fn write_section(
     out: &mut String,
     section: &Section,
     class: &str,
-    pictures: &BTreeMap<&str, &Drawn>,
+    pictures: &Shown<'_>,
 ) -> Result<(), ReportError> {
     let title = if section.id == "answer" {
         "The answer"
@@ -106,24 +121,29 @@ fn write_section(
                 write_table(out, &name, &head, &rows, &figures);
             }
             Block::Picture { name, caption } => {
-                if let Some(drawn) = pictures.get(name.as_str()) {
+                if let Some((drawn, phone)) = pictures.get(name.as_str()) {
                     let svg = drawn.picture.svg_without_fonts()?;
-                    let class = if drawn.narrow.is_empty() {
+                    let narrow = match phone {
+                        _ if !drawn.narrow.is_empty() => narrow::bars(&drawn.narrow),
+                        Some(picture) => {
+                            format!(
+                                "<div class=\"narrow\">\n{}\n</div>\n",
+                                picture.svg_without_fonts()?
+                            )
+                        }
+                        None => String::new(),
+                    };
+                    let class = if narrow.is_empty() {
                         ""
                     } else {
                         " class=\"has-narrow\""
                     };
                     let _ = write!(
                         out,
-                        "<figure id=\"picture-{}\"{class}>\n<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{}\">\n{svg}\n</div>\n{}\
+                        "<figure id=\"picture-{}\"{class}>\n<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{}\">\n{svg}\n</div>\n{narrow}\
                          <figcaption>{}</figcaption>\n</figure>\n",
                         escaped(&name),
                         escaped(&format!("Picture: {} ({name})", drawn.picture.title)),
-                        if drawn.narrow.is_empty() {
-                            String::new()
-                        } else {
-                            narrow::bars(&drawn.narrow)
-                        },
                         text(&caption)
                     );
                 }

@@ -189,6 +189,7 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
         },
     );
     environment.add_filter("localized", move |text: &str| marks.localized(text));
+    environment.add_filter("file", |text: &str| file(text));
     environment.add_filter("short", |text: &str| short(text));
     environment.add_filter("words", |text: &str| text.replace(['.', '_'], " "));
     environment.add_filter("either", move |parts: Vec<String>| {
@@ -228,6 +229,22 @@ fn difference(saving: f64, write: &dyn Fn(f64) -> String) -> String {
     } else {
         format!("{amount} more")
     }
+}
+
+/// The path of a file without steps back: where a brief names `../tariffs/gas.toml`, `tariffs/gas.toml` beside its own folder.
+pub(super) fn file(path: &str) -> String {
+    let mut parts: Vec<&str> = Vec::new();
+    for part in path.split('/') {
+        let back = parts.last().is_some_and(|last| !matches!(*last, "" | ".."));
+        match part {
+            "." => {}
+            ".." if back => {
+                parts.pop();
+            }
+            part => parts.push(part),
+        }
+    }
+    parts.join("/")
 }
 
 /// A name cut where many stand together.

@@ -31,10 +31,10 @@ mod seeded;
 
 use table::Row;
 
-/// What the page is made of, in its order.
 /// A room and its rows.
 type Room = (&'static str, fn() -> Vec<Row>);
 
+/// What the page is made of, in its order.
 const ROOMS: &[Room] = &[
     ("Units and fuels", units::rows),
     ("Moist air", air::rows),

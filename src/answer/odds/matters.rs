@@ -6,7 +6,7 @@ use super::words::{found_by, plain};
 use crate::answer::lever::{condition, unit};
 use crate::problem::Problems;
 use crate::study::odds::{Sample, Sampler, chance_wrong_knowing, shares};
-use crate::study::{Measure, Pair, break_even};
+use crate::study::{Lever, Measure, Pair, break_even};
 
 /// What the year of the weather is called beside the levers.
 const WEATHER_YEAR: &str = "year of the weather";
@@ -117,35 +117,37 @@ pub(super) fn most_important(
     all
 }
 
-/// The lever worth its survey, reading or quote.
+/// The lever worth its survey, reading or quote, in words.
 pub(super) fn find_out(matters: &[Matters], wrong: f64) -> String {
-    let open = matters.iter().filter(|one| one.found_by.is_some());
-    let best = open.min_by(|a, b| {
+    /// By how much a survey has to lower the chance of choosing wrong to be worth it: some hundred samples tell no less.
+    const WORTH: f64 = 0.02;
+    let of_100 = |share: f64| match (share * 100.0).round() {
+        0.0 => "hardly any case".to_owned(),
+        1.0 => "about 1 case of 100".to_owned(),
+        cases => format!("about {cases:.0} cases of 100"),
+    };
+    let open = || {
+        matters.iter().filter_map(|one| {
+            let words = Lever::named(&one.lever).map(plain)?;
+            Some((one, words, one.found_by.as_deref()?))
+        })
+    };
+    let best = open().min_by(|(a, ..), (b, ..)| {
         a.chance_wrong_known
             .total_cmp(&b.chance_wrong_known)
             .then(b.share.total_cmp(&a.share))
     });
-    let percent = |share: f64| format!("{:.0} %", share * 100.0);
-    match best {
-        Some(best) if wrong - best.chance_wrong_known >= 0.01 => format!(
-            "Find out the {} first, by {}: the chance of choosing wrong would fall from {} to {}.",
-            best.lever,
-            best.found_by.as_deref().unwrap_or(""),
-            percent(wrong),
-            percent(best.chance_wrong_known)
+    let now = of_100(wrong);
+    match (best, open().next()) {
+        (Some((best, words, by)), _) if wrong - best.chance_wrong_known >= WORTH => format!(
+            "Find out {words} first: {by}. Whoever chooses the cheapest of all as things stand is wrong in {now}; who knows that, in {}.",
+            of_100(best.chance_wrong_known)
         ),
-        Some(best) => format!(
-            "The chance of choosing wrong is {}; no single survey, reading or quote lowers it by a hundredth. What would say most about the saving is the {}, by {}.",
-            percent(wrong),
-            matters
-                .iter()
-                .find(|one| one.found_by.is_some())
-                .map_or(best.lever.as_str(), |one| one.lever.as_str()),
-            matters
-                .iter()
-                .find_map(|one| one.found_by.as_deref())
-                .unwrap_or("")
+        (_, Some((_, words, by))) => format!(
+            "Whoever chooses the cheapest of all as things stand is wrong in {now}, and nothing that can be found out lowers that much. To know the saving itself better, find out {words}: {by}."
         ),
-        None => format!("The chance of choosing wrong is {}.", percent(wrong)),
+        _ => format!(
+            "Whoever chooses the cheapest of all as things stand is wrong in {now}, and no survey, reading or quote says more."
+        ),
     }
 }

@@ -5,7 +5,7 @@ use serde::Serialize;
 use super::QuantilesAnswer;
 use super::make::{Sampled, quantiles};
 use super::matters::most_important;
-use super::words::{in_words, is_about_the_same};
+use super::words::{chance_in_words, in_words, is_about_the_same};
 use crate::study::Case;
 use crate::study::odds::{Sample, Sampler};
 
@@ -37,6 +37,8 @@ pub struct ChoiceSummary {
     pub chance_error: Option<f64>,
     /// Today's yearly cost less its own, in the same sample.
     pub saving: QuantilesAnswer,
+    /// The chance in words: "about 2 chances in 3 of being cheaper".
+    pub chance_words: String,
     /// Whether the chance says that neither is the cheaper.
     pub about_the_same: bool,
     /// The two unknowns that make most of the spread of the saving, the greater first.
@@ -77,12 +79,13 @@ pub fn summary(case: &Case, sampler: &Sampler, blocks: &[Vec<Sample>]) -> Option
             .map(|one| one.words.as_str())
             .collect();
         let depends_on =
-            (!named.is_empty()).then(|| format!("It hangs most on {}.", named.join(" and on ")));
+            (!named.is_empty()).then(|| format!("It depends most on {}.", named.join(" and on ")));
         Some(ChoiceSummary {
             label: label.clone(),
             chance_cheaper: chance.chance,
             chance_error: chance.error.is_finite().then_some(chance.error),
             saving,
+            chance_words: chance_in_words(chance.chance),
             about_the_same: is_about_the_same(chance.chance),
             sentence: in_words(label, chance.chance, saving, case.currency.code()),
             most_important,

@@ -30,7 +30,7 @@ pub(super) fn in_words(label: &str, chance: f64, saving: QuantilesAnswer, code: 
     };
     let than = if same.is_empty() { " than today" } else { "" };
     format!(
-        "{label}: {same}{} cheaper{than}; {between} a year in eight cases of ten.",
+        "{label}: {same}{}{than}; {between} a year in eight cases of ten.",
         chance_in_words(chance)
     )
 }
@@ -40,8 +40,8 @@ pub(super) fn is_about_the_same(chance: f64) -> bool {
     ABOUT_THE_SAME.contains(&chance)
 }
 
-/// A chance as it is said: "about 2 chances in 3 of being".
-fn chance_in_words(chance: f64) -> String {
+/// A chance of being cheaper as it is said: "about 2 chances in 3 of being cheaper".
+pub(super) fn chance_in_words(chance: f64) -> String {
     const SAID: [(f64, &str); 9] = [
         (0.1, "about 1 chance in 10"),
         (0.2, "about 1 chance in 5"),
@@ -53,16 +53,16 @@ fn chance_in_words(chance: f64) -> String {
         (0.8, "about 4 chances in 5"),
         (0.9, "about 9 chances in 10"),
     ];
-    if chance < 0.03 {
-        return "hardly a chance of being".to_owned();
-    }
-    if chance > 0.97 {
-        return "nearly certain to be".to_owned();
-    }
     let nearest = SAID
         .iter()
         .min_by(|a, b| (a.0 - chance).abs().total_cmp(&(b.0 - chance).abs()));
-    nearest.map_or_else(String::new, |(_, words)| format!("{words} of being"))
+    let said = match nearest {
+        _ if chance < 0.03 => "hardly a chance",
+        _ if chance > 0.97 => "a near certainty",
+        Some((_, words)) => words,
+        None => "a chance",
+    };
+    format!("{said} of being cheaper")
 }
 
 /// A lever as a family would say it.
@@ -71,7 +71,7 @@ pub(super) fn plain(lever: Lever) -> &'static str {
         Lever::ElectricityRate => "the price of electricity",
         Lever::FuelRate => "the price of gas",
         Lever::HeatLoss => "how much heat the home loses",
-        Lever::FlowTemperature => "how hot the water in the emitters has to be",
+        Lever::FlowTemperature => "the flow temperature the emitters need",
         Lever::Indoor => "how warm the rooms are kept",
         Lever::HotWater => "how much hot water is used",
         Lever::RatedOutput => "the output of the machine",
@@ -122,16 +122,22 @@ mod tests {
 
     #[test]
     fn chances_are_said_without_false_decimals() {
-        assert_eq!(chance_in_words(0.664), "about 2 chances in 3 of being");
-        assert_eq!(chance_in_words(0.01), "hardly a chance of being");
-        assert_eq!(chance_in_words(0.52), "about an even chance of being");
+        assert_eq!(
+            chance_in_words(0.664),
+            "about 2 chances in 3 of being cheaper"
+        );
+        assert_eq!(chance_in_words(0.01), "hardly a chance of being cheaper");
+        assert_eq!(
+            chance_in_words(0.52),
+            "about an even chance of being cheaper"
+        );
         assert_eq!(
             in_words("Air source", 0.67, between(-68.0, 112.0), "GBP"),
             "Air source: about the same as today; about 2 chances in 3 of being cheaper; between 70 GBP dearer and 110 GBP cheaper a year in eight cases of ten."
         );
         assert_eq!(
             in_words("Ground", 0.99, between(191.0, 443.0), "GBP"),
-            "Ground: nearly certain to be cheaper than today; between 190 and 440 GBP cheaper a year in eight cases of ten."
+            "Ground: a near certainty of being cheaper than today; between 190 and 440 GBP cheaper a year in eight cases of ten."
         );
         assert_eq!(
             in_words("Direct", 0.01, between(-443.0, -191.0), "GBP"),

@@ -34,7 +34,7 @@ pub(super) fn system(material: &Material<'_>, i: usize) -> Value {
         json!(home.emitters.design_flow_c() - home.emitters.design_spread_k()),
     );
     if let Some(water) = &home.hot_water {
-        put("hot_water_daily_kwh", json!(water.daily_kwh));
+        put("hot_water_daily_kwh", json!(water.mean_daily_kwh()));
         if let Some(store) = &water.store {
             put("store_c", json!(store.set_point_c));
         }

@@ -11,10 +11,13 @@ mod set;
 mod structure;
 mod table;
 
+use std::collections::BTreeSet;
+
 use super::ReportError;
 use super::page::place;
 use super::pictures::{Drawn, Material};
-use super::sentences::{FIRST_PAGE, sections};
+use super::sentences::{FIRST_PAGE, Section, sections};
+use crate::chart;
 use draw::{About, Sheet, document};
 use set::Setter;
 
@@ -23,7 +26,8 @@ use set::Setter;
 /// # Errors
 /// When a sentence cannot be filled or the document cannot be written.
 pub fn report_pdf(material: &Material<'_>, drawn: &[Drawn]) -> Result<Vec<u8>, ReportError> {
-    let sections = sections(material, drawn)?;
+    let mut sections = sections(material, drawn)?;
+    say_what_cannot_be_printed(&mut sections);
     let sheet = Sheet::new(material.locale.paper.points());
     let (width, height) = sheet.column();
     let place = place(material);
@@ -58,4 +62,26 @@ pub fn report_pdf(material: &Material<'_>, drawn: &[Drawn]) -> Result<Vec<u8>, R
             .collect(),
     };
     document(&about, sheet, &pages, &structure, drawn)
+}
+
+/// The font holds Latin, Greek and Cyrillic letters and the signs of the report. Another sign of a name is printed as an open box, and the
+/// paper says so.
+fn say_what_cannot_be_printed(sections: &mut [Section]) {
+    let missing: BTreeSet<char> = sections
+        .iter()
+        .flat_map(|section| section.markdown.chars())
+        .filter(|c| !c.is_whitespace() && !chart::font_has(*c))
+        .collect();
+    let findings = sections.iter_mut().find(|section| section.id == "findings");
+    let (Some(section), false) = (findings, missing.is_empty()) else {
+        return;
+    };
+    let signs = match missing.len() {
+        1 => "One sign of a name is".to_owned(),
+        n => format!("{n} signs of names are"),
+    };
+    section.markdown += &format!(
+        "\n\n**Note.** {signs} not in the font of this paper and printed as an open box (□). The same report as report.html shows \
+         them with the fonts of its reader.\n"
+    );
 }

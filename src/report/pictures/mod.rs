@@ -7,14 +7,18 @@ mod cold;
 mod flow;
 mod machine;
 mod money;
+mod signature;
 mod weather;
 
 use super::hours::coldest_year;
 use crate::answer::Estimate;
 use crate::chart::{ChartError, Picture};
 use crate::locale::Locale;
+use crate::signature::Signature;
 use crate::study::{Case, Outcome};
 use crate::year::{Flags, Heating, Ledger, Row};
+
+pub use signature::signature_picture;
 
 /// A picture with the name of its file and the sentence that stands below it.
 #[derive(Debug, Clone)]
@@ -62,6 +66,8 @@ pub struct Material<'a> {
     pub ledgers: &'a [Ledger],
     /// The answer.
     pub estimate: &'a Estimate,
+    /// What the meter readings of the brief show; nothing where it names none.
+    pub signature: Option<&'a Signature>,
     /// How figures are written.
     pub locale: Locale,
 }
@@ -78,6 +84,7 @@ pub fn pictures(material: &Material<'_>) -> Result<Vec<Drawn>, ChartError> {
     ];
     all.extend(money::spend(material)?);
     all.extend(carbon::carbon_by_year(material)?);
+    all.extend(signature::signature(material)?);
     all.extend(weather::weather_carpet(material)?);
     all.extend(weather::weather_duration(material)?);
     all.extend(weather::electricity_carpet(material)?);
@@ -101,7 +108,12 @@ pub fn pictures(material: &Material<'_>) -> Result<Vec<Drawn>, ChartError> {
     Ok(all)
 }
 
-fn drawn(name: impl Into<String>, caption: impl Into<String>, picture: Picture) -> Drawn {
+/// A picture without a narrow form.
+pub(super) fn drawn(
+    name: impl Into<String>,
+    caption: impl Into<String>,
+    picture: Picture,
+) -> Drawn {
     Drawn {
         name: name.into(),
         caption: caption.into(),

@@ -4,9 +4,29 @@ use super::{Bar, BarPart, Drawn, Material, drawn};
 use crate::chart::{self, ChartError};
 use crate::locale::MONTHS;
 
+/// Systems that the first page has room for, today's among them.
+const FIRST_PAGE: usize = 6;
+
+/// Which systems the first page shows: all where there is room, else today's and the cheapest choices, in the order of the brief.
+fn shown_first(costs: &[(bool, f64)]) -> Vec<usize> {
+    let mut order: Vec<usize> = (0..costs.len()).collect();
+    order.sort_by(|&a, &b| {
+        let key = |i: usize| (!costs[i].0, costs[i].1);
+        let (a, b) = (key(a), key(b));
+        a.0.cmp(&b.0).then(a.1.total_cmp(&b.1))
+    });
+    order.truncate(FIRST_PAGE);
+    order.sort_unstable();
+    order
+}
+
 pub(super) fn annual_cost(material: &Material<'_>) -> Result<Drawn, ChartError> {
     let estimate = material.estimate;
-    let systems = estimate.systems.iter().map(|s| chart::SystemCost {
+    let costs: Vec<_> = estimate.systems.iter().map(|s| (s.today, s.cost)).collect();
+    let shown = shown_first(&costs);
+    let left_out = costs.len() - shown.len();
+    let systems = shown.iter().map(|&i| &estimate.systems[i]);
+    let systems = systems.map(|s| chart::SystemCost {
         label: s.label.clone(),
         today: s.today,
         energy: s.cost_energy,
@@ -19,7 +39,14 @@ pub(super) fn annual_cost(material: &Material<'_>) -> Result<Drawn, ChartError> 
         systems: systems.collect(),
     };
     let picture = chart::annual_cost(&data, &material.locale.marks)?;
-    let caption = "What a year of heating and hot water costs to run. What the systems cost to put in is not in it.";
+    let mut caption =
+        "What a year of heating and hot water costs to run. What the systems cost to put in is not in it.".to_owned();
+    if left_out > 0 {
+        caption += &format!(
+            " Today and the {} cheapest choices; the others stand under Money.",
+            shown.len() - 1
+        );
+    }
     let mut drawn = drawn("annual-cost", caption, picture);
     drawn.narrow = cost_bars(material);
     Ok(drawn)
@@ -117,4 +144,18 @@ pub(super) fn spend(material: &Material<'_>) -> Result<Option<Drawn>, ChartError
     let caption = "All that is spent so far, year after year: what is put in, energy, upkeep and what must be bought again. Where two lines \
 cross, one has caught up with the other.";
     Ok(Some(drawn("spend", caption, picture)))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_first_page_shows_today_and_the_cheapest() {
+        let three = [(false, 3.0), (true, 9.0), (false, 1.0)];
+        assert_eq!(shown_first(&three), [0, 1, 2]);
+        let mut many: Vec<_> = (0..9).map(|i| (false, f64::from(10 - i))).collect();
+        many[0].0 = true;
+        assert_eq!(shown_first(&many), [0, 4, 5, 6, 7, 8]);
+    }
 }

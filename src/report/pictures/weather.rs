@@ -5,6 +5,7 @@ use std::ops::Range;
 use super::{Drawn, Material, drawn, of_the_year};
 use crate::chart::{self, ChartError, calendar_months};
 use crate::report::hours::{coldest_days_of, coldest_year};
+use crate::report::sentences::file;
 
 /// Hours of a day's column.
 const HOURS: usize = 24;
@@ -67,7 +68,7 @@ pub(super) fn weather_duration(material: &Material<'_>) -> Result<Option<Drawn>,
         return Ok(None);
     }
     let data = chart::DurationCurve {
-        place: material.estimate.weather.file.clone(),
+        place: file(&material.estimate.weather.file),
         outdoor_c: site.outdoor_c.clone(),
         levels: vec![("design".to_owned(), material.estimate.home.design_outdoor_c)],
     };

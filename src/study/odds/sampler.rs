@@ -3,11 +3,13 @@
 use rayon::prelude::*;
 
 use super::hypercube::Hypercube;
+use super::past::Pasts;
 use super::range::correlated;
 use super::uncertain::{Doubts, Uncertain, possible};
 use crate::problem::{Place, Problem, Problems};
 use crate::study::case::Case;
 use crate::study::lever::Lever;
+use crate::study::outcome::Outcome;
 
 /// Draws samples of a case.
 #[derive(Debug, Clone)]
@@ -15,6 +17,7 @@ pub struct Sampler {
     case: Case,
     doubts: Doubts,
     cube: Hypercube,
+    pasts: Pasts,
 }
 
 /// What one system came to in one sample.
@@ -45,8 +48,9 @@ impl Sampler {
     /// A sampler of `points` samples a block.
     ///
     /// # Errors
-    /// No uncertain lever, a range that is none or that reaches what is impossible, a correlation outside −1 to 1.
-    pub fn new(case: Case, doubts: Doubts, seed: u64, points: usize) -> Result<Self, Problems> {
+    /// No uncertain lever, a range that is none or that reaches what is impossible, a correlation outside −1 to 1; a bill that cannot
+    /// be made.
+    pub fn new(mut case: Case, doubts: Doubts, seed: u64, points: usize) -> Result<Self, Problems> {
         let mut problems = Problems::new();
         let refuse = |field: &str, found: String, allowed: &str, remedy: &str| {
             Problem::new(Place::field(field), found, allowed, remedy)
@@ -79,7 +83,19 @@ impl Sampler {
             points,
             quantities: doubts.levers.len() + usize::from(case.site.years.len() > 1),
         };
-        problems.or(Self { case, doubts, cube })
+        problems.or(())?;
+        // A sample is one year: the years of a life and what they cost are not asked for.
+        for contender in &mut case.contenders {
+            contender.outlay = None;
+            contender.life = None;
+        }
+        let pasts = Pasts::of(&case)?;
+        Ok(Self {
+            case,
+            doubts,
+            cube,
+            pasts,
+        })
     }
 
     /// The levers that are moved.
@@ -145,26 +161,35 @@ impl Sampler {
         }
         // Every system meets the same year of the weather.
         let years = case.site.years.len();
+        let mut year = 0;
         if let (Some(share), true) = (shares.last(), self.draws_years()) {
-            let year = ((share * years as f64) as usize).min(years - 1);
+            year = ((share * years as f64) as usize).min(years - 1);
             case = case.in_year(year);
         }
-        let systems = case.contenders.iter().map(|contender| {
-            let outcome = case.run_one(contender, None)?;
-            let sums = outcome.mean_sums();
-            Ok(Drawn {
-                cost: outcome.costs.total,
-                carbon_kg: sums.carbon_kg,
-                spf_h4: sums.spf_h4(),
-                hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
-                min_indoor_c: outcome
-                    .years
-                    .iter()
-                    .map(|year| year.min_indoor_c)
-                    .fold(f64::INFINITY, f64::min),
-            })
-        });
-        let systems = systems.collect::<Result<_, Problems>>()?;
+        let today = self.pasts.run(&case, 0, year, None)?;
+        let mut systems = Vec::with_capacity(case.contenders.len());
+        systems.push(Drawn::of(&today));
+        for place in 1..case.contenders.len() {
+            let outcome = self.pasts.run(&case, place, year, Some(&today))?;
+            systems.push(Drawn::of(&outcome));
+        }
         Ok(Sample { shares, systems })
+    }
+}
+
+impl Drawn {
+    fn of(outcome: &Outcome) -> Self {
+        let sums = outcome.mean_sums();
+        Self {
+            cost: outcome.costs.total,
+            carbon_kg: sums.carbon_kg,
+            spf_h4: sums.spf_h4(),
+            hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
+            min_indoor_c: outcome
+                .years
+                .iter()
+                .map(|year| year.min_indoor_c)
+                .fold(f64::INFINITY, f64::min),
+        }
     }
 }
