@@ -395,8 +395,13 @@ fn levers_hold(case: &Case, outcomes: &[Outcome], choice: usize) -> Result<(), T
     };
     let (before, after) = (hours(&as_is.case), hours(&cooler.case));
     for (hour, (before, after)) in before.iter().zip(&after).enumerate() {
-        let odd = Flags::CYCLING | Flags::AT_GREATEST_OUTPUT | Flags::FLOW_CAPPED;
-        let clean = |row: &Row| !row.flags.has(odd) && row.machine_water_kwh == 0.0;
+        let odd = [
+            Flags::CYCLING,
+            Flags::AT_GREATEST_OUTPUT,
+            Flags::FLOW_CAPPED,
+        ];
+        let is_odd = |row: &Row| odd.iter().any(|&flag| row.flags.has(flag));
+        let clean = |row: &Row| !is_odd(row) && row.machine_water_kwh == 0.0;
         let same_heat = (before.machine_space_kwh - after.machine_space_kwh).abs() < 1e-6;
         let (Some(was), Some(is)) = (before.space_cop, after.space_cop) else {
             continue;
