@@ -65,9 +65,10 @@ fn metadata() -> Value {
     serde_json::from_slice(&output.stdout).unwrap()
 }
 
-/// Whether an SPDX expression is met by what is allowed: `(MIT OR Apache-2.0) AND Unicode-3.0`, also the older `MIT/Apache-2.0`.
+/// Whether an SPDX expression is met by what is allowed: `(MIT OR Apache-2.0) AND Unicode-3.0`, also the older `MIT/Apache-2.0`, and
+/// the operator in small letters.
 fn is_allowed(expression: &str) -> bool {
-    let text = expression.replace('/', " OR ");
+    let text = expression.replace('/', " OR ").replace(" or ", " OR ");
     // AND binds stronger than OR; parentheses are the only nesting that is met.
     let parts = |text: &str, word: &str| -> Vec<String> {
         let (mut depth, mut found, mut from) = (0, Vec::new(), 0);
@@ -104,6 +105,7 @@ fn expressions_are_understood() {
     for good in [
         "MIT",
         "MIT/Apache-2.0",
+        "MIT or Apache-2.0",
         "GPL-3.0 OR MIT",
         "(MIT OR Apache-2.0) AND Unicode-3.0",
         "Apache-2.0 WITH LLVM-exception OR MIT",

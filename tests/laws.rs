@@ -205,6 +205,8 @@ const ROUNDING_KWH: f64 = 1e-9;
 /// What may be below nothing: what is given back, temperatures, and losses of what is cooler than around it.
 const SIGNED: &[&str] = &[
     "fabric_loss_kwh",
+    // Rooms that nothing keeps warm can freeze; the water that comes back is held to be no colder than they were.
+    "space_return_c",
     "store_loss_kwh",
     "room_stored_kwh",
     "store_stored_kwh",
@@ -260,6 +262,13 @@ fn hours_hold(rows: &[Row], has_own_pump: bool) -> Result<(), TestCaseError> {
             row.running_hours <= 1.0 + ROUNDING_KWH,
             "hour {hour}: {row:?}"
         );
+        if let (Some(return_c), true) = (row.space_return_c, hour > 0) {
+            let room_c = rows[hour - 1].indoor_c;
+            prop_assert!(
+                return_c >= room_c - ROUNDING_KWH,
+                "hour {hour}: return at {return_c} from rooms at {room_c}: {row:?}"
+            );
+        }
         for (column, value) in COLUMNS.iter().zip(row.values()) {
             let Some(value) = value else { continue };
             prop_assert!(value.is_finite(), "hour {hour}: {} is {value}", column.name);
@@ -386,8 +395,13 @@ fn levers_hold(case: &Case, outcomes: &[Outcome], choice: usize) -> Result<(), T
     };
     let (before, after) = (hours(&as_is.case), hours(&cooler.case));
     for (hour, (before, after)) in before.iter().zip(&after).enumerate() {
-        let odd = Flags::CYCLING | Flags::AT_GREATEST_OUTPUT | Flags::FLOW_CAPPED;
-        let clean = |row: &Row| !row.flags.has(odd) && row.machine_water_kwh == 0.0;
+        let odd = [
+            Flags::CYCLING,
+            Flags::AT_GREATEST_OUTPUT,
+            Flags::FLOW_CAPPED,
+        ];
+        let is_odd = |row: &Row| odd.iter().any(|&flag| row.flags.has(flag));
+        let clean = |row: &Row| !is_odd(row) && row.machine_water_kwh == 0.0;
         let same_heat = (before.machine_space_kwh - after.machine_space_kwh).abs() < 1e-6;
         let (Some(was), Some(is)) = (before.space_cop, after.space_cop) else {
             continue;
@@ -396,16 +410,22 @@ fn levers_hold(case: &Case, outcomes: &[Outcome], choice: usize) -> Result<(), T
             .source_c
             .zip(after.source_c)
             .is_some_and(|(a, b)| b >= a - 1.0);
+        // Rooms with another past can ask for as much heat at hotter water.
+        let cooler_water = before
+            .machine_flow_c
+            .zip(after.machine_flow_c)
+            .is_some_and(|(a, b)| b <= a);
         if clean(before)
             && clean(after)
             && same_heat
             && same_source
+            && cooler_water
             && before.machine_space_kwh > 0.1
         {
             // The map is monotone at its nodes, and so in between.
             prop_assert!(
                 is >= was * (1.0 - 1e-9),
-                "hour {hour}: COP {is} after {was} with cooler water"
+                "hour {hour}: COP {is} after {was} with cooler water: {after:?} after {before:?}"
             );
         }
     }

@@ -41,6 +41,10 @@ pub fn rows() -> Vec<Row> {
             )
             .cop
     };
+    let begins_c = (0..200)
+        .map(|i| 10.0 - 0.05 * f64::from(i))
+        .find(|&outdoor_c| damp(outdoor_c) > 0.0)
+        .unwrap_or(f64::NAN);
     vec![
         moisture.row(
             "Moisture of the standard rating conditions, kg/kg",
@@ -64,10 +68,13 @@ pub fn rows() -> Vec<Row> {
             3.0,
             "\"near\"",
         ),
-        Row::holds(
-            "Frost begins between +4 and +7 °C in maritime air",
-            "common practice, no source",
-            damp(4.0) > 0.0 && damp(7.0) == 0.0,
+        Row::new(
+            "Outdoor temperature below which maritime air frosts, °C",
+            "common practice, no source: between +4 and +7 °C",
+            5.5,
+            begins_c,
+            1.5,
+            "the range itself",
         ),
     ]
 }

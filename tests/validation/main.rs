@@ -94,6 +94,8 @@ fn a_wrong_value_is_red_and_an_old_page_is_stale() {
     let row = |got| Row::new("a", "b", 2.0, got, 0.1, "c");
     assert!(row(2.09).is_green() && !row(2.11).is_green() && !row(f64::NAN).is_green());
     assert!(!Row::new("a", "b", 1.0, 1.0 + 1e-12, 0.0, "c").is_green());
+    let at_least = |got| Row::at_least("a", "b", 1.0, got, "c").is_green();
+    assert!(at_least(7.0) && at_least(1.0) && !at_least(0.99) && !at_least(f64::NAN));
     let page = |got| table::page(&[("A", vec![row(got)])]);
     assert!(table::is_stale(&page(2.05), &page(2.0501)).is_none());
     assert!(table::is_stale(&page(2.05), &page(2.06)).is_some());

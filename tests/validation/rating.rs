@@ -46,13 +46,12 @@ pub fn rows() -> Vec<Row> {
         ("ground, R410A, variable speed", Application::Low, 125.0),
     ] {
         let rated = rate_machine(&typical(name), Climate::Average, application, None).unwrap();
-        rows.push(Row::holds(
-            format!(
-                "ηs of \"{name}\" at {} temperature is at least {least} %",
-                application.word()
-            ),
+        rows.push(Row::at_least(
+            format!("ηs of \"{name}\" at {} temperature, %", application.word()),
             "ecodesign floor since 2017, EU 813/2013 [M]",
-            rated.rating.eta_s_percent >= least,
+            least,
+            rated.rating.eta_s_percent,
+            "a floor: a machine for sale may be better",
         ));
     }
     rows

@@ -74,10 +74,12 @@ pub fn rows() -> Vec<Row> {
             32,
             "an optimum at a day's own temperature: a day more or less counts as colder",
         ),
-        Row::holds(
-            "Readings made 60 % too large are called odd",
+        Row::at_least(
+            "Readings called odd where two were made 60 % too large",
             "tests/reference/signature.py made two",
-            odd >= 2,
+            2.0,
+            odd as f64,
+            "chance may make another odd",
         ),
     ]
 }

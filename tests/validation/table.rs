@@ -15,6 +15,8 @@ pub struct Row {
     pub tolerance: f64,
     /// Why it is that much.
     pub because: String,
+    /// Whether the expected value is the least that is allowed, however much more is got.
+    pub is_floor: bool,
 }
 
 impl Row {
@@ -33,6 +35,21 @@ impl Row {
             got,
             tolerance,
             because: because.into(),
+            is_floor: false,
+        }
+    }
+
+    /// A value that must not be less than another.
+    pub fn at_least(
+        what: impl Into<String>,
+        source: impl Into<String>,
+        least: f64,
+        got: f64,
+        because: impl Into<String>,
+    ) -> Self {
+        Self {
+            is_floor: true,
+            ..Self::new(what, source, least, got, 0.0, because)
         }
     }
 
@@ -45,7 +62,7 @@ impl Row {
     /// Difference as a share of what is allowed; not finite where there is no number.
     pub fn used(&self) -> f64 {
         let off = (self.got - self.expected).abs();
-        if off == 0.0 {
+        if off == 0.0 || self.is_floor && self.got > self.expected {
             return 0.0;
         }
         off / self.tolerance
@@ -189,9 +206,10 @@ fn line(row: &Row) -> String {
     };
     let state = if row.is_green() { "" } else { "**RED** " };
     format!(
-        "| {state}{} | {} | {} | {} | {difference} | {} | {} | {} |",
+        "| {state}{} | {} | {}{} | {} | {difference} | {} | {} | {} |",
         row.what,
         row.source,
+        if row.is_floor { "≥ " } else { "" },
         shown(row.expected),
         shown(row.got),
         shown(row.tolerance),

@@ -197,6 +197,17 @@ fn read_machine(
             "the pump at home overcomes the loop besides the machine",
         );
     }
+    // What the points hold is scaled to what the pump takes at home: nothing cannot be.
+    if let (Some(tested), Some(_), Some(leaf)) = (source_power, at_home, &raw.source_power)
+        && tested.kw() <= 0.0
+    {
+        check.refuse(
+            &leaf.span(),
+            format!("{} W in the tested points", tested.kw() * 1000.0),
+            "more than 0 W where source_power_at_home is given",
+            "leave source_power_at_home out where the points hold no pump",
+        );
+    }
     let current = check.within(&raw.greatest_current, &CURRENT_A);
     Some(Head {
         label: label?,
