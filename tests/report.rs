@@ -541,7 +541,7 @@ fn the_checksums_cover_the_hourly_prices() {
     }
 }
 
-/// On a phone no picture scrolls: each has a form of its own whose smallest letters are at least 11 px in 360 px of page.
+/// On a phone no picture scrolls: each has a form of its own whose smallest letters are at least 10 px in 360 px of page.
 #[test]
 fn every_picture_of_the_demonstration_has_a_form_for_a_phone() {
     let (_, page, _) = demonstration();
@@ -577,7 +577,7 @@ fn every_picture_of_the_demonstration_has_a_form_for_a_phone() {
                 .attribute("font-size")
                 .unwrap_or_else(|| panic!("a text without size: {text:?}"));
             let size: f64 = size.trim_end_matches("px").parse().unwrap();
-            assert!(size * 360.0 / wide >= 11.0, "{size} of {wide}");
+            assert!(size * 360.0 / wide >= 10.0, "{size} of {wide}");
         }
     }
 }
