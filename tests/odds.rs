@@ -310,13 +310,14 @@ fn the_year_of_the_weather_is_drawn() {
 /// may be off by 3 % of a few kelvin, and a kelvin is 2 to 3 % of electricity.
 #[test]
 fn a_history_scaled_beforehand_is_that_of_the_whole_way() {
-    let brief = Brief::demonstration().unwrap();
+    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("briefs/ground.toml");
+    let brief = Brief::read(&path).unwrap();
     let case = brief.case;
     let ground: Vec<usize> = (1..case.contenders.len())
         .filter(|place| case.contenders[*place].aged.is_some())
         .collect();
     assert!(!ground.is_empty());
-    let sampler = Sampler::new(case.clone(), brief.doubts, 2, 40).unwrap();
+    let sampler = Sampler::new(case.clone(), brief.doubts, 2, 16).unwrap();
     let mut worst: f64 = 0.0;
     for sample in sampler.block(0).unwrap() {
         let mut moved = case.clone();
@@ -363,8 +364,8 @@ fn steady(machine: &HeatPump, source_c: f64, flow_c: f64, share: f64) -> Deliver
 /// factor, at the same heat drawn. That is exact without a map of its own, whatever the hour.
 ///
 /// A doubt about the published points themselves is another: all COPs a twentieth lower, fitted again. Against that, the factor is off
-/// in electricity by what the fit does with the points (2 % of it, whose doubt is 5 %), and in the heat drawn by the electricity that
-/// is then heat in the circuit: 5 % of 1/COP.
+/// in electricity by what the fit does with the points (measured 0.2 %, held to 1 %), and in the heat drawn by the electricity that
+/// is then heat in the circuit: 5 % of 1/(COP − 1), which is 5 % at a COP of 2, the worst place here.
 #[test]
 fn a_factor_stands_for_a_machine_of_its_own() {
     for name in ["air, R290, variable speed", "ground, R410A, variable speed"] {
@@ -400,8 +401,8 @@ fn a_factor_stands_for_a_machine_of_its_own() {
             100.0 * electricity,
             100.0 * drawn
         );
-        assert!(electricity < 0.02, "{name} {electricity}");
-        assert!(drawn < 0.04, "{name} {drawn}");
+        assert!(electricity < 0.01, "{name} {electricity}");
+        assert!(drawn < 0.055, "{name} {drawn}");
     }
 }
 
