@@ -146,8 +146,11 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
 }
 
+/// What drew and the blocks it drew.
+type Sampled = (Sampler, Vec<Vec<Sample>>);
+
 /// A modest sample for the odds of every choice; nothing where none was wished for.
-fn sampled(brief: &Brief, samples: usize) -> Result<Option<(Sampler, Vec<Vec<Sample>>)>, Problems> {
+fn sampled(brief: &Brief, samples: usize) -> Result<Option<Sampled>, Problems> {
     /// Samples of a block.
     const BLOCK: usize = 20;
     /// The same seed as that of `odds`; the same estimate gives the same bytes.

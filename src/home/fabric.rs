@@ -243,7 +243,8 @@ impl Fabric {
         );
         let stored_kwh = self.capacity_kwh_per_k * (end_c - room_c);
         let free_loss_kwh = heat_kwh + gains_kw - self.capacity_kwh_per_k * (free_c - room_c);
-        let aired_kwh = heat_kwh + gains_kw - free_loss_kwh - stored_kwh;
+        // What is left of heat and gains after loss and storage, written so that an hour without airing holds a plain 0.
+        let aired_kwh = self.capacity_kwh_per_k * (free_c - end_c);
         RoomStep {
             end_c,
             loss_kwh: free_loss_kwh,

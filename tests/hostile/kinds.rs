@@ -200,7 +200,7 @@ fn sheet(input: &[u8]) -> Result<bool, String> {
         Err(problems) => return refused(problems),
     };
     let sum: usize = input.iter().map(|byte| usize::from(*byte)).sum();
-    if sum % 8 != 0 {
+    if !sum.is_multiple_of(8) {
         return Ok(true);
     }
     let Ok(fitted) = fit(&sheet) else {

@@ -72,7 +72,7 @@ fn hostile_input_is_read_or_refused() {
                     }
                     let which = TURNS[case % TURNS.len()];
                     let kind = &KINDS[which];
-                    if case % 10_000 == 0 {
+                    if case.is_multiple_of(10_000) {
                         println!("{case} cases begun after {:?}", start.elapsed());
                     }
                     let mut random = Random::new(seed, case as u64);
