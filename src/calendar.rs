@@ -4,6 +4,10 @@
 //! (tariff bands, set points, days of standing charge) goes through [`CivilHour`], which the axis makes for a time
 //! zone, so that both clock changes come out as they do on the wall: one civil day of 23 hours, one of 25.
 
+mod column;
+
+pub use column::HourColumn;
+
 use chrono::{DateTime, Datelike, Duration, NaiveDate, TimeZone, Timelike, Utc, Weekday};
 use chrono_tz::Tz;
 

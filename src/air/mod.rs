@@ -10,6 +10,7 @@
 mod error;
 mod moist;
 mod saturation;
+mod tabulated;
 
 pub use error::AirError;
 pub use moist::MoistAir;
@@ -17,6 +18,7 @@ pub use saturation::{
     dew_point_c, relative_humidity_at_dew_point, saturation_pressure_over_water_pa,
     saturation_pressure_pa,
 };
+pub use tabulated::{humidity_ratio_at_station, humidity_ratio_over_ice};
 
 /// Pressure of the standard atmosphere at sea level, Pa (ASHRAE Fundamentals 2017, chapter 1, equation 3).
 pub const SEA_LEVEL_PA: f64 = 101_325.0;

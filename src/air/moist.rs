@@ -183,7 +183,7 @@ impl MoistAir {
     }
 }
 
-fn ratio(vapour_pressure_pa: f64, pressure_pa: f64) -> f64 {
+pub(super) fn ratio(vapour_pressure_pa: f64, pressure_pa: f64) -> f64 {
     MASS_RATIO * vapour_pressure_pa / (pressure_pa - vapour_pressure_pa)
 }
 

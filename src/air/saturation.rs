@@ -63,6 +63,33 @@ fn evaluate(coefficients: &Coefficients, temperature_c: f64) -> (f64, f64) {
     (value, slope)
 }
 
+/// What air is saturated over.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(super) enum Phase {
+    Ice,
+    Water,
+}
+
+/// Saturation pressure over a phase, Pa, and its slope, Pa/K, for a temperature in range.
+pub(super) fn pressure_and_slope(phase: Phase, temperature_c: f64) -> (f64, f64) {
+    let coefficients = match phase {
+        Phase::Ice => &ICE,
+        Phase::Water => &WATER,
+    };
+    let (logarithm, slope) = evaluate(coefficients, temperature_c);
+    let pressure_pa = logarithm.exp();
+    (pressure_pa, pressure_pa * slope)
+}
+
+/// Saturation pressure over a phase, Pa; not a number out of range.
+pub(super) fn saturation_pressure_of(phase: Phase, temperature_c: f64) -> f64 {
+    if RANGE_C.contains(&temperature_c) {
+        pressure_and_slope(phase, temperature_c).0
+    } else {
+        f64::NAN
+    }
+}
+
 /// The saturation pressure for a temperature that is known to be in range, Pa.
 pub(super) fn saturation_in_range_pa(temperature_c: f64) -> f64 {
     logarithm(temperature_c).0.exp()

@@ -1,7 +1,5 @@
 //! From cases and outcomes to the estimate.
 
-use std::collections::BTreeMap;
-
 use super::account::{bill_answers, meter_answers, shifting_answer, signal_gap};
 use super::bills::pair;
 use super::estimate::{
@@ -10,7 +8,7 @@ use super::estimate::{
 use super::home::{
     DesignAnswer, MeteredAnswer, PatternComparison, PatternFigures, RoomsAnswer, StoreAnswer,
 };
-use super::lever::lever_answer;
+use super::lever::break_evens;
 use super::lifetime::lifetime;
 use super::weather_years::{succession, year_answers, year_spread};
 use crate::home::Pattern;
@@ -18,8 +16,7 @@ use crate::problem::{Finding, Problems, Severity};
 use crate::signature::{DailyWeather, Signature};
 use crate::source::Memory;
 use crate::study::{
-    BalancePoint, Case, Contender, DesignPoint, Lever, Measure, Outcome, Pair, balance_point,
-    break_even, design_point, under_pattern,
+    BalancePoint, Case, Contender, DesignPoint, Outcome, balance_point, design_point, under_pattern,
 };
 use crate::units::Fuel;
 use crate::year::Heating;
@@ -87,7 +84,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
     findings.extend(cool_stores(case));
     findings.extend(hygiene_cycles(case));
     let mut systems = Vec::with_capacity(outcomes.len());
-    let mut break_evens = BTreeMap::new();
+    let break_evens = break_evens(case, outcomes)?;
     for (i, (contender, outcome)) in case.contenders.iter().zip(outcomes).enumerate() {
         let mut system = system(
             contender,
@@ -109,20 +106,6 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         findings.extend(shortfalls(&system));
         system.ground = ground_shown(case, contender, outcome)?;
         findings.extend(source_too_cold(&system));
-        if i > 0 {
-            let levers = [
-                Lever::ElectricityRate,
-                Lever::FuelRate,
-                Lever::FlowTemperature,
-            ];
-            let mut answers = Vec::new();
-            let pair = Pair::new(case, outcomes, i);
-            for (lever, pair) in levers.into_iter().zip(pair.iter().cycle()) {
-                let found = break_even(pair, lever, &[Measure::YearlyCost])?;
-                answers.extend(found.iter().map(|found| lever_answer(found, pair)));
-            }
-            break_evens.insert(system.label.clone(), answers);
-        }
         systems.push(system);
     }
     let site = &case.site;

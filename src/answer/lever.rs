@@ -1,12 +1,53 @@
 //! Break-evens as an adviser says them.
 
+use std::collections::BTreeMap;
+
+use rayon::prelude::*;
 use rust_decimal::Decimal;
 use rust_decimal::prelude::FromPrimitive;
 
 use super::estimate::LeverAnswer;
+use crate::problem::Problems;
 use crate::source::Source;
-use crate::study::{Account, BreakEven, Crossing, Lever, Measure, Pair};
+use crate::study::{Account, BreakEven, Case, Crossing, Lever, Measure, Outcome, Pair, break_even};
 use crate::units::Currency;
+
+/// Where each lever makes each choice equal today's system, by the label of the choice; all of them side by side.
+pub(super) fn break_evens(
+    case: &Case,
+    outcomes: &[Outcome],
+) -> Result<BTreeMap<String, Vec<LeverAnswer>>, Problems> {
+    const LEVERS: [Lever; 3] = [
+        Lever::ElectricityRate,
+        Lever::FuelRate,
+        Lever::FlowTemperature,
+    ];
+    let pairs: Vec<Pair> = (1..outcomes.len())
+        .filter_map(|choice| Pair::new(case, outcomes, choice))
+        .collect();
+    let asked: Vec<_> = pairs
+        .iter()
+        .flat_map(|pair| LEVERS.map(|lever| (pair, lever)))
+        .collect();
+    let found: Vec<Result<Vec<LeverAnswer>, Problems>> = asked
+        .par_iter()
+        .map(|(pair, lever)| {
+            let found = break_even(pair, *lever, &[Measure::YearlyCost])?;
+            Ok(found
+                .iter()
+                .map(|found| lever_answer(found, pair))
+                .collect())
+        })
+        .collect();
+    let mut answers = BTreeMap::new();
+    for ((pair, _), found) in asked.iter().zip(found) {
+        let of_choice: &mut Vec<_> = answers
+            .entry(pair.choice().system.label.clone())
+            .or_default();
+        of_choice.extend(found?);
+    }
+    Ok(answers)
+}
 
 /// One lever of one choice by one measure.
 pub(super) fn lever_answer(found: &BreakEven, pair: &Pair) -> LeverAnswer {

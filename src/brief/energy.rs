@@ -186,8 +186,8 @@ fn supply(
     Ok(Supply {
         findings: tariff.findings_over(&civil),
         signal: Signal {
-            price: meter.price_column(&tariff, None),
-            carbon_kg: factors.carbon_column(tariff.fuel, &site.civil)?,
+            price: meter.price_column(&tariff, None).into(),
+            carbon_kg: factors.carbon_column(tariff.fuel, &site.civil)?.into(),
             own,
         },
         account: Account {
@@ -229,7 +229,7 @@ impl Supply {
     pub fn expecting(&self, kwh: f64) -> Self {
         let Account { tariff, meter, .. } = &self.account;
         let mut supply = self.clone();
-        supply.signal.price = meter.price_column(tariff, Some(kwh));
+        supply.signal.price = meter.price_column(tariff, Some(kwh)).into();
         supply.account.expected_kwh = Some(kwh);
         supply
     }

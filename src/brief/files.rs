@@ -5,6 +5,7 @@ use std::cell::RefCell;
 use std::fs;
 use std::path::{Component, Path, PathBuf};
 
+use rayon::prelude::*;
 use sha2::{Digest as _, Sha256};
 
 use super::demo;
@@ -68,6 +69,29 @@ impl Folder {
         Ok(fitted)
     }
 
+    /// A machine sheet of a file, if it is one; what is wrong with it is said where it is used.
+    pub fn sheet(&self, path: &str) -> Option<Sheet> {
+        let content = self.content(path).ok()?;
+        let text = std::str::from_utf8(&content).ok()?;
+        let text = text.strip_prefix('\u{feff}').unwrap_or(text);
+        Sheet::parse(&self.name(path), text).ok()
+    }
+
+    /// Fits machines that will be asked for, side by side; what cannot be fitted is said where it is used.
+    pub fn fit_ahead(&self, sheets: impl Iterator<Item = Sheet>) {
+        let mut different: Vec<Sheet> = Vec::new();
+        for sheet in sheets {
+            if !different.contains(&sheet) {
+                different.push(sheet);
+            }
+        }
+        let fitted: Vec<(Sheet, Fitted)> = different
+            .into_par_iter()
+            .filter_map(|sheet| fit(&sheet).ok().map(|fitted| (sheet, fitted)))
+            .collect();
+        self.fitted.borrow_mut().extend(fitted);
+    }
+
     /// Keeps the checksum of a file that was read; each once.
     pub fn note(&self, file: String, content: &[u8]) {
         let mut read = self.read.borrow_mut();
@@ -102,11 +126,18 @@ impl Folder {
     /// # Errors
     /// A problem that names the file when it is missing, unreadable or too large.
     pub fn bytes(&self, path: &str) -> Result<Cow<'static, [u8]>, Problems> {
+        let content = self.content(path)?;
+        self.note(self.name(path), &content);
+        Ok(content)
+    }
+
+    /// The content of a file, not yet counted among those that were read.
+    fn content(&self, path: &str) -> Result<Cow<'static, [u8]>, Problems> {
         let name = self.name(path);
         let refuse = |found: String, remedy: &str| -> Problems {
             Problem::new(Place::file(name.as_str()), found, "a readable file", remedy).into()
         };
-        let content = match &self.root {
+        Ok(match &self.root {
             Root::Embedded(_) => demo::file(&name)
                 .map(Cow::Borrowed)
                 .ok_or_else(|| refuse("is not among the demonstration files".to_owned(), ""))?,
@@ -122,9 +153,7 @@ impl Folder {
                     .map(Cow::Owned)
                     .map_err(|beyond| refuse(beyond.found, &beyond.allowed))?
             }
-        };
-        self.note(name, &content);
-        Ok(content)
+        })
     }
 
     /// The content of a text file.

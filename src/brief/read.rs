@@ -21,12 +21,13 @@ use super::system::{Surroundings, contender};
 use super::weather::weather;
 use super::{defaults, demo};
 use crate::answer::{Assumption, BillsTold, Told};
-use crate::document::{Check, Document, Section, read_text};
+use crate::document::{Check, Document, Leaf, Section, read_text};
+use crate::heatpump::Sheet;
 use crate::locale::Locale;
 use crate::problem::Problems;
 use crate::signature::DailyWeather;
 use crate::study::odds::Doubts;
-use crate::study::{Case, scale_to_fuel};
+use crate::study::{Case, Contender, scale_to_fuel};
 
 /// A brief that can be run.
 #[derive(Debug, Clone)]
@@ -87,6 +88,17 @@ impl Brief {
     }
 }
 
+/// The machine sheets that the systems name, as far as they can be read.
+fn sheets(raw: &raw::Brief, folder: &Folder) -> impl Iterator<Item = Sheet> {
+    raw.today.iter().chain(&raw.choice).filter_map(|table| {
+        let named = |leaf: &Option<Leaf<String>>| leaf.as_ref()?.value().ok().cloned();
+        match named(&table.machine) {
+            Some(path) => folder.sheet(&path),
+            None => Sheet::typical(&named(&table.typical_machine)?).ok(),
+        }
+    })
+}
+
 /// Builds what can be built and checks everything else all the same, so that no problem waits for another to be mended.
 fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> {
     let mut notes = Notes::default();
@@ -104,17 +116,17 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     }
     let label = raw.home.as_ref().and_then(|home| check.value(&home.label));
     let zone = time_zone(raw.home.as_ref(), check, &mut notes);
-    // Meter readings are laid over every hour that was read; what is run are whole years.
-    let weather = weather(raw.weather.as_ref(), folder, check, &mut notes);
-    let used = weather.clone().map(|weather| used(weather, &mut notes));
-    let site = used
-        .as_ref()
-        .zip(zone)
-        .map(|(used, zone)| Arc::new(used.site(zone)));
-    let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
-    labels_differ(raw, check);
-    let locale = locale(raw.report.as_ref(), check);
-
+    let mut weather = weather(raw.weather.as_ref(), folder, check, &mut notes);
+    // Meter readings are laid over the temperatures of every hour that was read; what is run are whole years.
+    let used = weather.as_mut().map(|read| {
+        let whole = read.clone();
+        (
+            read.relative_humidity,
+            read.global_w_per_m2,
+            read.wind_m_per_s,
+        ) = (None, None, None);
+        used(whole, &mut notes)
+    });
     // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
     let facts = used.as_ref().map_or(
         WeatherFacts {
@@ -124,13 +136,20 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
         },
         |used| facts(&used.weather),
     );
+    let mut findings = used
+        .as_ref()
+        .map_or_else(Vec::new, |used| used.findings.clone());
+    let site = used
+        .zip(zone)
+        .map(|(used, zone)| Arc::new(used.into_site(zone)));
+    let energy = energy(raw, folder, site.as_deref(), zone, check, &mut notes);
+    labels_differ(raw, check);
+    let locale = locale(raw.report.as_ref(), check);
+
     let mut contenders = Vec::new();
     let mut machines = Vec::new();
     let mut rooms = Vec::new();
     let mut parts_w_per_k = None;
-    let mut findings = used
-        .as_ref()
-        .map_or_else(Vec::new, |used| used.findings.clone());
     if let Some(energy) = &energy {
         findings.extend(energy.supplies().flat_map(|supply| supply.findings.clone()));
     }
@@ -151,6 +170,7 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     });
     let bills = bills.flatten();
     findings.extend(bills.iter().flat_map(|bills| bills.findings.clone()));
+    folder.fit_ahead(sheets(raw, folder));
     if let Some(home) = &raw.home {
         let systems = raw.today.iter().map(|today| (today, true));
         for (table, today) in systems.chain(raw.choice.iter().map(|choice| (choice, false))) {
@@ -163,7 +183,11 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
                 folder,
                 today,
             };
-            if let Some(made) = contender(table, &surroundings, check, &mut notes) {
+            if let Some(mut made) = contender(table, &surroundings, check, &mut notes) {
+                let first: Option<&Contender> = contenders.first();
+                if let Some(first) = first {
+                    Arc::make_mut(&mut made.contender.plan).share(&first.plan);
+                }
                 contenders.push(made.contender);
                 machines.push(made.machine);
                 rooms.push(made.rooms);

@@ -1,5 +1,7 @@
 //! From the weather that was read to what every system of a brief shares: whole years, with the humidity that frost needs.
 
+use std::borrow::Cow;
+
 use chrono::Datelike;
 use chrono_tz::Tz;
 
@@ -16,19 +18,20 @@ use crate::year::Site;
 /// The weather that is run.
 #[derive(Debug, Clone)]
 pub(super) struct Used {
-    /// Whole years, or all there is of less than one.
+    /// Whole years, or all there is of less than one; its humidity measured or assumed.
     pub weather: Weather,
-    /// Relative humidity, measured or assumed.
-    humidity: Vec<f64>,
     /// What was found in the files, what was left out or assumed, and what this weather is not fit for.
     pub findings: Vec<Finding>,
 }
 
 /// Makes weather ready to be run.
 pub(super) fn used(weather: Weather, notes: &mut Notes) -> Used {
-    let (weather, left_out) = weather.in_whole_years();
+    let (mut weather, left_out) = weather.in_whole_years();
     let (humidity, assumed) = weather.humidity_or_assumed();
-    let humidity = humidity.into_owned();
+    let supplied = match humidity {
+        Cow::Borrowed(_) => None,
+        Cow::Owned(supplied) => Some(supplied),
+    };
     if assumed.is_some() {
         notes.add(
             "outdoor humidity",
@@ -40,17 +43,14 @@ pub(super) fn used(weather: Weather, notes: &mut Notes) -> Used {
     findings.extend(left_out);
     findings.extend(assumed);
     findings.extend(unfit_for_peak_load(&weather));
-    Used {
-        weather,
-        humidity,
-        findings,
-    }
+    weather.relative_humidity = supplied.or(weather.relative_humidity);
+    Used { weather, findings }
 }
 
 impl Used {
     /// Weather and clock as the systems share them.
-    pub fn site(&self, zone: Tz) -> Site {
-        let weather = &self.weather;
+    pub fn into_site(self, zone: Tz) -> Site {
+        let weather = self.weather;
         let civil = weather.axis.civil(zone);
         Site {
             axis: weather.axis,
@@ -61,10 +61,10 @@ impl Used {
                 .collect(),
             civil,
             years: weather.years(),
-            outdoor_c: weather.outdoor_c.clone(),
-            relative_humidity: Some(self.humidity.clone()),
-            global_w_per_m2: weather.global_w_per_m2.clone(),
-            repaired: weather.repaired.clone(),
+            outdoor_c: weather.outdoor_c,
+            relative_humidity: weather.relative_humidity,
+            global_w_per_m2: weather.global_w_per_m2,
+            repaired: weather.repaired,
         }
     }
 }

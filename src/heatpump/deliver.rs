@@ -9,8 +9,8 @@ use super::part_load::{running_rise_k, start_up_loss_kw, starts_per_hour};
 use super::steady::{Held, Secant, Steady, Wanted};
 use crate::fault::{self, Fault};
 
-/// Change of the running flow temperature below which its substitution ends, K, and the most substitutions.
-const RISE_TOLERANCE_K: f64 = 1e-5;
+/// Change of the running flow temperature below which its substitution ends, K (3e-6 of the electricity), and the most substitutions.
+const RISE_TOLERANCE_K: f64 = 1e-4;
 const MOST_RISE_STEPS: usize = 30;
 /// Difference of wanted and greatest heat that is no shortfall, relative: rounding.
 const ENOUGH: f64 = 1e-9;
@@ -48,15 +48,29 @@ impl HeatPump {
         } else {
             Wanted::Net(wanted_kw)
         };
-        let steady = self.steady(cold, flow_c, wanted, moisture);
-        let (mut steady, flow_c, mut share) = match steady.held {
-            Held::Between => (steady, flow_c, 1.0),
-            Held::AtLeast => self.on_and_off(steady, cold, duty, wanted_kw, flow_c, moisture),
-            Held::AtGreatest => {
-                flags.short = wanted_kw > steady.net_kw() * (1.0 + ENOUGH);
-                (steady, flow_c, (wanted_kw / steady.net_kw()).min(1.0))
-            }
+        let on_and_off = OnAndOff {
+            pump: self,
+            spread_k: duty.spread_k,
+            wanted_kw,
+            flow_c,
+            highest_c,
         };
+        // Where neither frost nor a falling source comes into it, the map's least output alone tells that it goes on and off.
+        let plain = moisture == 0.0 && cold.k_per_kw == 0.0 && !duty.at_full_output;
+        let (mut steady, flow_c, mut share) =
+            if plain && wanted_kw < self.least_kw_at(cold.open_c, flow_c) {
+                on_and_off.on_the_map(cold)
+            } else {
+                let steady = self.steady(cold, flow_c, wanted, moisture);
+                match steady.held {
+                    Held::Between => (steady, flow_c, 1.0),
+                    Held::AtLeast => on_and_off.from(steady, cold, moisture),
+                    Held::AtGreatest => {
+                        flags.short = wanted_kw > steady.net_kw() * (1.0 + ENOUGH);
+                        (steady, flow_c, (wanted_kw / steady.net_kw()).min(1.0))
+                    }
+                }
+            };
         if steady.source_c < core.limits.lowest_source_c {
             let Some(held) = self.turned_down(cold, flow_c, moisture) else {
                 flags.stopped = true;
@@ -91,33 +105,6 @@ impl HeatPump {
     pub fn least_output_kw(&self, cold: &ColdSide, flow_c: f64) -> f64 {
         let steady = self.steady(cold, flow_c, Wanted::Least, self.moisture(cold));
         steady.net_kw() * self.scale
-    }
-
-    /// Goes on and off because its least output at a flow temperature is more than is wanted: the machine while running, its flow
-    /// temperature then and the share of the time that it runs.
-    fn on_and_off(
-        &self,
-        mut least: Steady,
-        cold: &ColdSide,
-        duty: &Duty,
-        wanted_kw: f64,
-        flow_c: f64,
-        moisture: f64,
-    ) -> (Steady, f64, f64) {
-        let highest_c = self.core.limits.highest_flow_at(cold.open_c);
-        let mut running_c = flow_c;
-        let mut secant = Secant::default();
-        for _ in 0..MOST_RISE_STEPS {
-            let share = (wanted_kw / least.net_kw()).min(1.0);
-            let next_c = (flow_c + running_rise_k(duty.spread_k, share)).min(highest_c);
-            let change_k = next_c - running_c;
-            if change_k.abs() < RISE_TOLERANCE_K {
-                break;
-            }
-            running_c = secant.next(running_c, change_k).clamp(flow_c, highest_c);
-            least = self.steady(cold, running_c, Wanted::Least, moisture);
-        }
-        (least, running_c, (wanted_kw / least.net_kw()).min(1.0))
     }
 
     /// Adds an hour up from its steady machine.
@@ -165,6 +152,64 @@ impl HeatPump {
             speed_fraction: steady.speed_share,
             flags,
         }
+    }
+}
+
+/// A machine that goes on and off because its least output at a flow temperature is more than is wanted. Its ways give the machine
+/// while running, its flow temperature then and the share of the time that it runs.
+struct OnAndOff<'a> {
+    pump: &'a HeatPump,
+    spread_k: f64,
+    wanted_kw: f64,
+    /// Flow temperature that running all the time would need, °C.
+    flow_c: f64,
+    highest_c: f64,
+}
+
+impl OnAndOff<'_> {
+    /// Without frost and with a source that does not fall.
+    fn on_the_map(&self, cold: &ColdSide) -> (Steady, f64, f64) {
+        let running_c = self.running_c(cold.open_c, 1.0, self.flow_c);
+        let least = self.pump.steady(cold, running_c, Wanted::Least, 0.0);
+        (least, running_c, self.share(least.net_kw()))
+    }
+
+    /// From the machine at its least output at the flow temperature that running all the time would need.
+    fn from(&self, mut least: Steady, cold: &ColdSide, moisture: f64) -> (Steady, f64, f64) {
+        let mut running_c = self.flow_c;
+        for _ in 0..MOST_RISE_STEPS {
+            // Frost and the source's fall hardly move with the flow: first to where the map's output alone leads, then they.
+            let next_c = self.running_c(least.source_c, 1.0 - least.loss.output, running_c);
+            if (next_c - running_c).abs() < RISE_TOLERANCE_K {
+                break;
+            }
+            running_c = next_c;
+            least = self.pump.steady(cold, running_c, Wanted::Least, moisture);
+        }
+        (least, running_c, self.share(least.net_kw()))
+    }
+
+    /// Flow temperature while running with the source and the share of output that frost leaves as they are, °C, sought from a guess.
+    fn running_c(&self, source_c: f64, left: f64, guess_c: f64) -> f64 {
+        let mut secant = Secant::default();
+        let mut running_c = guess_c;
+        for _ in 0..MOST_RISE_STEPS {
+            let least_kw = self.pump.least_kw_at(source_c, running_c) * left;
+            let hotter_c = self.flow_c + running_rise_k(self.spread_k, self.share(least_kw));
+            let change_k = hotter_c.min(self.highest_c) - running_c;
+            if change_k.abs() < RISE_TOLERANCE_K {
+                break;
+            }
+            running_c = secant
+                .next(running_c, change_k)
+                .clamp(self.flow_c, self.highest_c);
+        }
+        running_c
+    }
+
+    /// Share of the time that it runs.
+    fn share(&self, least_kw: f64) -> f64 {
+        (self.wanted_kw / least_kw).min(1.0)
     }
 }
 

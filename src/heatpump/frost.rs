@@ -5,7 +5,7 @@
 //! the house and the standstill meanwhile cost in proportion. One strength, fitted to the sheet's own points that
 //! contain defrost, scales both losses.
 
-use crate::air::{MoistAir, SEA_LEVEL_PA};
+use crate::air::{MoistAir, SEA_LEVEL_PA, humidity_ratio_at_station, humidity_ratio_over_ice};
 
 /// Heat of sublimation of ice at 0 °C, kJ/kg (handbook value 2834).
 pub const SUBLIMATION_KJ_PER_KG: f64 = 2834.0;
@@ -94,7 +94,11 @@ impl Frost {
     fn growth(&self, outdoor_c: f64, surface_c: f64, humidity_ratio: f64) -> FrostSteps {
         let ramp = (surface_c / FULL_GROWTH_C).clamp(0.0, 1.0);
         let frosted_share = ramp * ramp * (3.0 - 2.0 * ramp);
-        let surface_humidity_ratio = saturated_humidity_ratio(surface_c);
+        let surface_humidity_ratio = if surface_c < 0.0 {
+            humidity_ratio_over_ice(surface_c)
+        } else {
+            saturated_humidity_ratio(surface_c)
+        };
         let latent_share = latent_share(
             outdoor_c - surface_c,
             humidity_ratio - surface_humidity_ratio,
@@ -130,13 +134,12 @@ fn latent_share(cooling_k: f64, deposited: f64) -> f64 {
 }
 
 /// Humidity ratio of outdoor air, kg/kg, from its temperature and, where there is one, its relative humidity (0..1, over liquid
-/// water at all temperatures, as weather stations state it: [`MoistAir::at_station`]).
+/// water at all temperatures, as weather stations state it: [`humidity_ratio_at_station`]).
 ///
 /// Without humidity the air is taken as in the standard rating conditions, wet bulb 1 K below dry bulb.
 pub fn humidity_ratio(outdoor_c: f64, relative_humidity: Option<f64>) -> f64 {
     match relative_humidity {
-        Some(share) => MoistAir::at_station(outdoor_c, share.clamp(0.0, 1.0), SEA_LEVEL_PA)
-            .map_or(f64::NAN, |air| air.humidity_ratio()),
+        Some(share) => humidity_ratio_at_station(outdoor_c, share.clamp(0.0, 1.0)),
         None => standard_humidity_ratio(outdoor_c),
     }
 }

@@ -3,7 +3,7 @@
 //! Greatest output, least output, and electricity per heat at fractions of the way between them, over source and flow
 //! temperature. Exact solutions on coarse Chebyshev nodes in flow and fraction are refined to a fine table; a look-up is
 //! multilinear, so it rises and falls as its nodes do. Source nodes are whole degrees, where the greatest speed has its
-//! knots. A look-up of range and input takes about 375 instructions (callgrind on x86-64: 133 and 241; benches/machine.rs).
+//! knots.
 //! Nothing with a kink is in the map: limits, frost, cycling and backup stand outside it.
 
 mod build;
@@ -41,7 +41,7 @@ pub struct Map {
     inputs: Vec<Input>,
 }
 
-/// Evenly spaced nodes.
+/// Evenly spaced nodes, two at least.
 #[derive(Debug, Clone, Copy)]
 struct Axis {
     low: f64,
@@ -56,54 +56,45 @@ impl Axis {
 
     /// The node below and the share of the way to the next; the ends hold beyond them.
     fn place(&self, at: f64) -> (usize, f64) {
-        if self.count < 2 {
-            return (0, 0.0);
-        }
-        let steps = ((at - self.low) / self.step).clamp(0.0, (self.count - 1) as f64);
-        // The clamp makes the cast exact and NaN becomes 0.
-        let below = (steps as usize).min(self.count - 2);
-        (below, steps - below as f64)
+        let last = self.count.saturating_sub(2) as u32;
+        let steps = (at - self.low) / self.step;
+        // Below the axis and NaN become 0.
+        let below = (steps as u32).min(last);
+        (below as usize, (steps - f64::from(below)).clamp(0.0, 1.0))
     }
 }
 
 /// A place in a map: the four nodes about a condition and their weights. An hour asks several outputs at one place.
 pub(super) struct Spot<'a> {
-    map: &'a Map,
-    nodes: [usize; 4],
-    weights: [f64; 4],
+    fraction: &'a Axis,
+    /// Inputs over the fraction at the cooler and at the warmer source, each with the cooler and the hotter flow one after the other.
+    rows: [&'a [Input]; 2],
+    /// Weights of the same four.
+    weights: [[f64; 2]; 2],
+    /// Greatest and least output, kW.
+    pub range: Range,
 }
 
 impl Spot<'_> {
-    /// Greatest and least output, kW.
-    pub fn range(&self) -> Range {
-        let mut range = Range {
-            greatest_kw: 0.0,
-            least_kw: 0.0,
-        };
-        for (&node, w) in self.nodes.iter().zip(self.weights) {
-            let at = self.map.ranges[node];
-            range.greatest_kw += w * at.greatest_kw;
-            range.least_kw += w * at.least_kw;
-        }
-        range
-    }
-
     /// Input at a fraction of the way from least to greatest output.
     pub fn input(&self, fraction: f64) -> Input {
-        let axis = &self.map.fraction;
-        let (k, x) = axis.place(fraction);
-        let next = usize::from(axis.count > 1);
+        let n = self.fraction.count;
+        let (k, x) = self.fraction.place(fraction);
         let mut input = Input {
             electric_per_heat: 0.0,
             speed_share: 0.0,
         };
-        for (&node, w) in self.nodes.iter().zip(self.weights) {
-            let at = node * axis.count + k;
-            let (low, high) = (self.map.inputs[at], self.map.inputs[at + next]);
-            let (below, above) = (w * (1.0 - x), w * x);
-            input.electric_per_heat +=
-                below * low.electric_per_heat + above * high.electric_per_heat;
-            input.speed_share += below * low.speed_share + above * high.speed_share;
+        for (row, weights) in self.rows.iter().zip(self.weights) {
+            for (from, w) in [k, k + n].into_iter().zip(weights) {
+                // Always there: a place is within its axis.
+                let Some([low, high]) = row.get(from..from + 2) else {
+                    continue;
+                };
+                let (below, above) = (w * (1.0 - x), w * x);
+                input.electric_per_heat +=
+                    below * low.electric_per_heat + above * high.electric_per_heat;
+                input.speed_share += below * low.speed_share + above * high.speed_share;
+            }
         }
         input
     }
@@ -112,20 +103,44 @@ impl Spot<'_> {
 impl Map {
     /// A condition's place in the map, from which range and inputs are read.
     pub(super) fn spot(&self, source_c: f64, flow_c: f64) -> Spot<'_> {
+        let (at, weights) = self.place(source_c, flow_c);
+        let n = self.fraction.count;
+        Spot {
+            fraction: &self.fraction,
+            rows: at.map(|node| &self.inputs[node * n..(node + 2) * n]),
+            weights,
+            range: self.range_at(at, weights),
+        }
+    }
+
+    /// The node with the cooler flow at the cooler and at the warmer source, and the weights of these and of their hotter
+    /// neighbours.
+    fn place(&self, source_c: f64, flow_c: f64) -> ([usize; 2], [[f64; 2]; 2]) {
         let (i, s) = self.source.place(source_c);
         let (j, f) = self.flow.place(flow_c);
-        let (di, dj) = self.strides();
         let at = i * self.flow.count + j;
-        Spot {
-            map: self,
-            nodes: [at, at + dj, at + di, at + di + dj],
-            weights: [(1.0 - s) * (1.0 - f), (1.0 - s) * f, s * (1.0 - f), s * f],
+        let weights = [1.0 - s, s].map(|w| [w * (1.0 - f), w * f]);
+        ([at, at + self.flow.count], weights)
+    }
+
+    fn range_at(&self, at: [usize; 2], weights: [[f64; 2]; 2]) -> Range {
+        let mut range = Range {
+            greatest_kw: 0.0,
+            least_kw: 0.0,
+        };
+        for (node, [w, v]) in at.into_iter().zip(weights) {
+            if let Some([cooler, hotter]) = self.ranges.get(node..node + 2) {
+                range.greatest_kw += w * cooler.greatest_kw + v * hotter.greatest_kw;
+                range.least_kw += w * cooler.least_kw + v * hotter.least_kw;
+            }
         }
+        range
     }
 
     /// Greatest and least output at a condition, kW.
     pub fn range(&self, source_c: f64, flow_c: f64) -> Range {
-        self.spot(source_c, flow_c).range()
+        let (at, weights) = self.place(source_c, flow_c);
+        self.range_at(at, weights)
     }
 
     /// Input at a fraction of the way from least to greatest output.
@@ -137,18 +152,6 @@ impl Map {
     pub(super) fn greatest_output_kw(&self) -> f64 {
         let outputs = self.ranges.iter().map(|range| range.greatest_kw);
         outputs.fold(0.0, f64::max)
-    }
-
-    /// Steps to the next source and the next flow node.
-    fn strides(&self) -> (usize, usize) {
-        (
-            if self.source.count > 1 {
-                self.flow.count
-            } else {
-                0
-            },
-            usize::from(self.flow.count > 1),
-        )
     }
 
     /// Whether the frost-free COP falls with flow and rises with source temperature at every fraction, over the limits.
@@ -191,11 +194,6 @@ mod tests {
         assert_eq!(axis.place(-30.0), (0, 0.0));
         assert_eq!(axis.place(40.0), (54, 1.0));
         assert_eq!(axis.place(-19.5), (0, 0.5));
-        let single = Axis {
-            low: 1.0,
-            step: 1.0,
-            count: 1,
-        };
-        assert_eq!(single.place(0.3), (0, 0.0));
+        assert_eq!(axis.place(f64::NAN).0, 0);
     }
 }

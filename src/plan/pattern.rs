@@ -1,6 +1,6 @@
 //! A plan that follows a running pattern.
 
-use crate::calendar::CivilHour;
+use crate::calendar::{CivilHour, HourColumn};
 use crate::fault::{self, Fault};
 use crate::home::{FROST_C, Pattern, WarmUp};
 use crate::year::{Plan, Recovery, Signal};
@@ -32,7 +32,7 @@ pub fn following(
     electricity: Signal,
     fuel: Option<Signal>,
 ) -> Plan {
-    let set_point_c: Vec<f64> = civil
+    let set_point_c: HourColumn = civil
         .iter()
         .map(|hour| match hour.hour {
             0..7 | 9..16 | 23.. if fault::on(Fault::RunLikeBoiler) => FROST_C,
@@ -58,7 +58,7 @@ pub fn following(
         let (hours_ahead, target_c) = rises(&set_point_c, longest_h);
         Recovery {
             hours_ahead,
-            target_c,
+            target_c: target_c.into(),
             begins_above_kw,
             at_the_time: pattern.warm_up == WarmUp::AtTheTime,
         }

@@ -6,6 +6,7 @@ use super::design::{Layout, LoopDesign};
 use super::line::EARLY_ERROR;
 use super::response::{Memory, Response};
 use super::undisturbed::HOURS_PER_YEAR;
+use crate::calendar::HourColumn;
 
 /// Heat is put back in summer over this many days about the warmest one of the year's wave.
 pub const RECHARGE_DAYS: f64 = 120.0;
@@ -20,7 +21,7 @@ pub struct BuriedLoop {
     /// Brine and pump.
     pub circuit: Circuit,
     /// Undisturbed ground at the loop for every hour of the axis, °C.
-    pub(super) undisturbed_c: Vec<f64>,
+    pub(super) undisturbed_c: HourColumn,
     /// Fall of the wall for each watt per metre, m K/W.
     pub(super) response: Response,
     /// From wall to brine, m K/W.

@@ -35,6 +35,8 @@ pub use trench::{Trench, steady_response, total_pipe_m};
 pub use undisturbed::{AnnualSwing, HOURS_PER_YEAR, TRENCH_DIFFUSIVITY_M2_PER_S, undisturbed_c};
 pub use water::WaterSource;
 
+use crate::calendar::HourColumn;
+
 /// What a source gives in an hour.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Offer {
@@ -61,7 +63,7 @@ pub enum Source {
 #[derive(Debug, Clone, PartialEq)]
 pub struct GroundLoop {
     /// Undisturbed ground at loop depth for every hour of the axis, °C.
-    pub undisturbed_c: Vec<f64>,
+    pub undisturbed_c: HourColumn,
     /// How far the brine entering the machine falls below the ground for each kilowatt drawn, K/kW.
     pub resistance_k_per_kw: f64,
 }

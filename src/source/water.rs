@@ -1,6 +1,7 @@
 //! Well and surface water: what it gives, and what lifting it takes.
 
 use super::Offer;
+use crate::calendar::HourColumn;
 
 /// Heat capacity of a litre of cold water, kJ/(L K): that of the polynomials in [`super::brine`] at 10 °C within 0.2 %.
 const WATER_KJ_PER_L_K: f64 = 4.19;
@@ -11,7 +12,7 @@ const KJ_PER_L_M: f64 = 9.806_65e-3;
 #[derive(Debug, Clone, PartialEq)]
 pub struct WaterSource {
     /// The water for every hour of the axis, °C.
-    pub water_c: Vec<f64>,
+    pub water_c: HourColumn,
     /// What is lost in an exchanger between water and machine, K; 0 when the water goes through the machine.
     pub approach_k: f64,
     /// Flow while the machine runs, L/s.
@@ -61,7 +62,7 @@ mod tests {
     #[test]
     fn a_draw_cools_what_leaves_and_not_what_enters() {
         let well = WaterSource {
-            water_c: vec![10.0],
+            water_c: vec![10.0].into(),
             approach_k: 2.0,
             flow_l_per_s: 0.5,
             pump_kw: 0.2,

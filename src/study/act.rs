@@ -30,28 +30,30 @@ impl Lever {
         }
         match self {
             Self::ElectricityRate => {
-                for contender in contenders {
+                for contender in contenders.iter_mut() {
                     contender.electricity = scaled(&contender.electricity, value);
                     for beside in &mut contender.beside {
                         if beside.account.tariff.fuel == Fuel::Electricity {
                             beside.account = scaled(&beside.account, value);
                         }
                     }
-                    times(&mut plan(contender).electricity.price, value);
                 }
+                each_plan(contenders, |plan| times(&mut plan.electricity.price, value));
             }
             Self::FuelRate => {
-                for contender in contenders {
+                for contender in contenders.iter_mut() {
                     contender.fuel = contender.fuel.as_ref().map(|fuel| scaled(fuel, value));
-                    if let Some(Signal { price, .. }) = &mut plan(contender).fuel {
+                }
+                each_plan(contenders, |plan| {
+                    if let Some(Signal { price, .. }) = &mut plan.fuel {
                         times(price, value);
                     }
-                }
+                });
             }
             Self::ElectricityCarbon => {
-                for contender in contenders {
-                    times(&mut plan(contender).electricity.carbon_kg, value);
-                }
+                each_plan(contenders, |plan| {
+                    times(&mut plan.electricity.carbon_kg, value);
+                });
             }
             Self::HeatLoss => {
                 for contender in contenders {
@@ -88,27 +90,29 @@ impl Lever {
                 let warmer_k = contenders
                     .get(choice)
                     .map_or(0.0, |contender| value - contender.indoor_c);
-                for contender in contenders {
+                for contender in contenders.iter_mut() {
                     contender.indoor_c += warmer_k;
                     let pattern = &mut contender.pattern;
                     for set_point_c in pattern.weekday_c.iter_mut().chain(&mut pattern.weekend_c) {
                         *set_point_c += warmer_k;
                     }
-                    let plan = plan(contender);
+                }
+                each_plan(contenders, |plan| {
                     plan.comfort_c += warmer_k;
                     for target_c in plan
                         .recovery
                         .iter_mut()
-                        .flat_map(|ahead| &mut ahead.target_c)
+                        .flat_map(|ahead| ahead.target_c.iter_mut())
                     {
                         *target_c += warmer_k;
                     }
-                    let asked_c = plan.asked_c.iter_mut().flatten();
-                    let set_points_c = plan.set_point_c.iter_mut().chain(&mut plan.backup_below_c);
+                    let asked_c = plan.asked_c.iter_mut().flat_map(|asked| asked.iter_mut());
+                    let below_c = plan.backup_below_c.iter_mut();
+                    let set_points_c = plan.set_point_c.iter_mut().chain(below_c);
                     for set_point_c in set_points_c.chain(asked_c) {
                         *set_point_c += warmer_k;
                     }
-                }
+                });
             }
             Self::FlowTemperature
             | Self::RatedOutput
@@ -177,9 +181,17 @@ impl Lever {
     }
 }
 
-/// The plan, made the contender's own.
-fn plan(contender: &mut Contender) -> &mut Plan {
-    Arc::make_mut(&mut contender.plan)
+/// Changes the plan of every contender; what the first one's shares with it, it shares again.
+fn each_plan(contenders: &mut [Contender], change: impl Fn(&mut Plan)) {
+    let mut first: Option<Arc<Plan>> = None;
+    for contender in contenders {
+        let plan = Arc::make_mut(&mut contender.plan);
+        change(plan);
+        match &first {
+            Some(first) => plan.share(first),
+            None => first = Some(Arc::clone(&contender.plan)),
+        }
+    }
 }
 
 fn times(column: &mut [f64], factor: f64) {

@@ -70,7 +70,7 @@ pub fn against_unshifted(case: &Case, contender: &Contender) -> Result<Option<Sh
         let cool = ledger
             .rows
             .iter()
-            .zip(&plan.set_point_c)
+            .zip(plan.set_point_c.iter())
             .filter(|(row, asked_c)| row.indoor_c < **asked_c - COOL_K)
             .count();
         let sums = outcome.mean_sums();

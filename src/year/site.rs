@@ -2,7 +2,7 @@
 
 use std::ops::Range;
 
-use crate::calendar::{CivilHour, HourAxis};
+use crate::calendar::{CivilHour, HourAxis, HourColumn};
 use crate::home::Fabric;
 
 /// Weather and clock of every hour of the axis; shared by all systems.
@@ -30,9 +30,9 @@ pub struct Site {
 #[derive(Debug, Clone, PartialEq)]
 pub struct Signal {
     /// Marginal price, tax included, in the currency of the tariff.
-    pub price: Vec<f64>,
+    pub price: HourColumn,
     /// Carbon factor, kg CO2e/kWh.
-    pub carbon_kg: Vec<f64>,
+    pub carbon_kg: HourColumn,
     /// Own generation that the household leaves over, where there is any.
     pub own: Option<OwnGeneration>,
 }
@@ -41,19 +41,25 @@ pub struct Signal {
 #[derive(Debug, Clone, PartialEq)]
 pub struct OwnGeneration {
     /// Left over in each hour, kWh.
-    pub spare_kwh: Vec<f64>,
+    pub spare_kwh: HourColumn,
     /// What would be paid for feeding a kilowatt-hour back in each hour, and is forgone when it is used.
-    pub price: Vec<f64>,
+    pub price: HourColumn,
 }
 
 impl Signal {
     /// A signal without own generation.
     pub fn bought(price: Vec<f64>, carbon_kg: Vec<f64>) -> Self {
         Self {
-            price,
-            carbon_kg,
+            price: price.into(),
+            carbon_kg: carbon_kg.into(),
             own: None,
         }
+    }
+
+    /// Shares the columns that are the same in another signal.
+    fn share(&mut self, other: &Signal) {
+        self.price.share(&other.price);
+        self.carbon_kg.share(&other.carbon_kg);
     }
 
     /// How much of an amount (kWh) in an hour is bought, and what the rest forgoes.
@@ -82,7 +88,7 @@ pub struct Recovery {
     /// Hours until the set point rises, counted from the beginning of each hour; 0 where nothing is to be warmed up yet.
     pub hours_ahead: Vec<u8>,
     /// The set point that is due then, °C.
-    pub target_c: Vec<f64>,
+    pub target_c: HourColumn,
     /// The warm-up begins once it would take more than this, kW; 0 to begin at once.
     pub begins_above_kw: f64,
     /// Nothing is heated ahead; once a spell has begun, a thermostat asks for all the heat there is.
@@ -118,13 +124,13 @@ impl Recovery {
 #[derive(Debug, Clone, PartialEq)]
 pub struct Plan {
     /// Indoor set point, °C.
-    pub set_point_c: Vec<f64>,
+    pub set_point_c: HourColumn,
     /// What the household asked for, °C, where the set points are shifted from it: rooms are short of heat against this.
-    pub asked_c: Option<Vec<f64>>,
+    pub asked_c: Option<HourColumn>,
     /// The backup heater only keeps the rooms above this, °C.
-    pub backup_below_c: Vec<f64>,
+    pub backup_below_c: HourColumn,
     /// How much hotter than its set point the hot-water store is made in an hour, K; nothing where it is never shifted.
-    pub store_shift_k: Option<Vec<f64>>,
+    pub store_shift_k: Option<HourColumn>,
     /// The warm-up before a higher set point; none when the set point is the same all day.
     pub recovery: Option<Recovery>,
     /// Rooms are aired from a few kelvins above this, °C: the highest set point.
@@ -136,6 +142,16 @@ pub struct Plan {
 }
 
 impl Plan {
+    /// Shares the columns that are the same in another plan.
+    pub fn share(&mut self, other: &Plan) {
+        self.set_point_c.share(&other.set_point_c);
+        self.backup_below_c.share(&other.backup_below_c);
+        self.electricity.share(&other.electricity);
+        if let (Some(fuel), Some(other)) = (&mut self.fuel, &other.fuel) {
+            fuel.share(other);
+        }
+    }
+
     /// The same signals with the set points of another plan.
     pub fn with_set_points_of(&self, other: &Plan) -> Plan {
         Plan {

@@ -8,7 +8,6 @@ use super::hybrid::{Asked, hybrid_hour};
 use super::row::{Flags, Row};
 use super::site::{Plan, Site};
 use super::system::{Heating, MachineSystem, State, System};
-use crate::calendar::CivilHour;
 use crate::heater::Boiler;
 use crate::heatpump::{ColdSide, Delivered, Duty, running_spread_k};
 use crate::home::{Control, Home, StoreStep, Tapped, WaterTemperatures};
@@ -94,7 +93,7 @@ pub fn step<P: Probe>(
         .store_shift_k
         .as_ref()
         .map_or(0.0, |column| column[hour]);
-    let water = draw(home, &site.civil[hour], shift_k, state, &mut row);
+    let water = draw(home, site, hour, shift_k, state, &mut row);
     let reach = |target_c| {
         home.fabric
             .heat_to_reach_kwh(state.room_c, target_c, outdoor_c, gains_kw)
@@ -213,7 +212,16 @@ pub(super) struct Rooms {
 }
 
 /// Draws an hour's hot water and says what its heater must bring.
-fn draw(home: &Home, clock: &CivilHour, shift_k: f64, state: &State, row: &mut Row) -> StoreStep {
+fn draw(
+    home: &Home,
+    site: &Site,
+    hour: usize,
+    shift_k: f64,
+    state: &State,
+    row: &mut Row,
+) -> StoreStep {
+    let clock = &site.civil[hour];
+    let month0 = usize::from(site.month0[hour]);
     let mut step = StoreStep {
         before_c: state.store.mean_c,
         drawn_kwh: 0.0,
@@ -228,9 +236,9 @@ fn draw(home: &Home, clock: &CivilHour, shift_k: f64, state: &State, row: &mut R
         return step;
     };
     let tapped = Tapped {
-        kwh: water.drawn_kwh(clock.month0(), clock.hour),
+        kwh: water.drawn_kwh(month0, clock.hour),
         draw_c: water.draw_c,
-        cold_c: water.cold_c[clock.month0()],
+        cold_c: water.cold_c[month0 % 12],
     };
     match &water.store {
         Some(store) => step = store.shifted(shift_k).step(&state.store, &tapped, clock),

@@ -33,7 +33,7 @@ pub(super) fn well(
     let flow = check.within(&table.flow, &bounds::SOURCE_FLOW_L_PER_S);
     let pump_kw = flow.and_then(|flow| pump_kw(table, flow.l_per_s(), check, notes));
     let made = WaterSource {
-        water_c: water_c?,
+        water_c: water_c?.into(),
         approach_k: approach?.k(),
         flow_l_per_s: flow?.l_per_s(),
         pump_kw: pump_kw?,

@@ -1,5 +1,7 @@
 //! Making a map: solve on coarse nodes, refine to the fine table.
 
+use rayon::prelude::*;
+
 use super::{Axis, Input, Map, Range};
 use crate::heatpump::compressor::Speeds;
 use crate::heatpump::correction::FittedMachine;
@@ -25,7 +27,9 @@ impl Map {
         let source = Axis {
             low: limits.lowest_source_c.floor(),
             step: 1.0,
-            count: (limits.highest_source_c.ceil() - limits.lowest_source_c.floor()) as usize + 1,
+            count: (limits.highest_source_c.ceil() - limits.lowest_source_c.floor()).max(1.0)
+                as usize
+                + 1,
         };
         let span = (limits.highest_flow_anywhere() - LOWEST_FLOW_C).max(1.0);
         let steps = (span / FLOW_STEP_K).ceil();
@@ -35,17 +39,12 @@ impl Map {
             count: steps as usize + 1,
         };
         let variable = machine.machine.speeds != Speeds::Fixed;
+        // A machine of one speed has one output, whatever the fraction.
+        let steps = if variable { FRACTION_STEPS } else { 1 };
         let fraction = Axis {
             low: 0.0,
-            step: 1.0 / FRACTION_STEPS as f64,
-            count: if variable { FRACTION_STEPS + 1 } else { 1 },
-        };
-        let mut map = Self {
-            source,
-            flow,
-            fraction,
-            ranges: Vec::with_capacity(source.count * flow.count),
-            inputs: Vec::with_capacity(source.count * flow.count * fraction.count),
+            step: 1.0 / steps as f64,
+            count: steps + 1,
         };
         let coarse_fractions = chebyshev(0.0, 1.0, if variable { FRACTION_NODES } else { 1 });
         let fraction_weights: Vec<_> = (0..fraction.count)
@@ -56,70 +55,84 @@ impl Map {
                 )
             })
             .collect();
-        for i in 0..source.count {
-            map.add_row(
-                machine,
-                limits,
-                source.node(i),
-                &coarse_fractions,
-                &fraction_weights,
-            )?;
+        // Rows are solved side by side; they and their first refusal stand in order all the same.
+        let rows: Vec<Result<Row, SolveError>> = (0..source.count)
+            .into_par_iter()
+            .map(|i| {
+                let across = (&coarse_fractions[..], &fraction_weights[..]);
+                row(machine, limits, source.node(i), &flow, across)
+            })
+            .collect();
+        let mut map = Self {
+            source,
+            flow,
+            fraction,
+            ranges: Vec::with_capacity(source.count * flow.count),
+            inputs: Vec::with_capacity(source.count * flow.count * fraction.count),
+        };
+        for row in rows {
+            let (ranges, inputs) = row?;
+            map.ranges.extend(ranges);
+            map.inputs.extend(inputs);
         }
         Ok(map)
     }
+}
 
-    /// One source temperature: solve coarse, refine.
-    fn add_row(
-        &mut self,
-        machine: &FittedMachine,
-        limits: &Limits,
-        source_c: f64,
-        fractions: &[f64],
-        fraction_weights: &[Vec<f64>],
-    ) -> Result<(), SolveError> {
-        let (low, high) = flows_of_row(limits, source_c, &self.flow);
-        let flows = chebyshev(low, high, FLOW_NODES);
-        let mut greatest = Vec::with_capacity(flows.len());
-        let mut least = Vec::with_capacity(flows.len());
-        let mut inputs = Vec::with_capacity(flows.len() * fractions.len());
-        for &flow_c in &flows {
-            let most = machine.greatest_kw(source_c, flow_c)?;
-            let few = machine.least_kw(source_c, flow_c)?;
-            greatest.push(most);
-            least.push(few);
-            let fastest = machine.machine.speeds.greatest(source_c, flow_c);
-            for fraction in fractions {
-                let heat_kw = few + fraction * (most - few);
-                let operation = machine.at_output(source_c, flow_c, heat_kw)?;
-                inputs.push((
-                    operation.electric_kw() / operation.heat_kw,
-                    operation.speed / fastest,
-                ));
-            }
+/// Ranges and inputs at one source temperature, by flow temperature.
+type Row = (Vec<Range>, Vec<Input>);
+
+/// One source temperature: solve at coarse fractions, refine by the weights of the fine ones.
+fn row(
+    machine: &FittedMachine,
+    limits: &Limits,
+    source_c: f64,
+    flow: &Axis,
+    (fractions, fraction_weights): (&[f64], &[Vec<f64>]),
+) -> Result<Row, SolveError> {
+    let (low, high) = flows_of_row(limits, source_c, flow);
+    let flows = chebyshev(low, high, FLOW_NODES);
+    let mut greatest = Vec::with_capacity(flows.len());
+    let mut least = Vec::with_capacity(flows.len());
+    let mut inputs = Vec::with_capacity(flows.len() * fractions.len());
+    for &flow_c in &flows {
+        let most = machine.greatest_kw(source_c, flow_c)?;
+        let few = machine.least_kw(source_c, flow_c)?;
+        greatest.push(most);
+        least.push(few);
+        let fastest = machine.machine.speeds.greatest(source_c, flow_c);
+        for fraction in fractions {
+            let heat_kw = few + fraction * (most - few);
+            let operation = machine.at_output(source_c, flow_c, heat_kw)?;
+            inputs.push((
+                operation.electric_kw() / operation.heat_kw,
+                operation.speed / fastest,
+            ));
         }
-        for j in 0..self.flow.count {
-            let along = weights(&flows, self.flow.node(j).clamp(low, high));
-            let dot = |values: &[f64]| along.iter().zip(values).map(|(w, v)| w * v).sum();
-            self.ranges.push(Range {
-                greatest_kw: dot(&greatest),
-                least_kw: dot(&least),
-            });
-            for across in fraction_weights {
-                let (mut electric, mut speed) = (0.0, 0.0);
-                for (row, w) in inputs.chunks_exact(fractions.len()).zip(&along) {
-                    for ((e, s), v) in row.iter().zip(across) {
-                        electric += w * v * e;
-                        speed += w * v * s;
-                    }
-                }
-                self.inputs.push(Input {
-                    electric_per_heat: electric,
-                    speed_share: speed,
-                });
-            }
-        }
-        Ok(())
     }
+    let mut row = (Vec::new(), Vec::new());
+    for j in 0..flow.count {
+        let along = weights(&flows, flow.node(j).clamp(low, high));
+        let dot = |values: &[f64]| along.iter().zip(values).map(|(w, v)| w * v).sum();
+        row.0.push(Range {
+            greatest_kw: dot(&greatest),
+            least_kw: dot(&least),
+        });
+        for across in fraction_weights {
+            let (mut electric, mut speed) = (0.0, 0.0);
+            for (row, w) in inputs.chunks_exact(fractions.len()).zip(&along) {
+                for ((e, s), v) in row.iter().zip(across) {
+                    electric += w * v * e;
+                    speed += w * v * s;
+                }
+            }
+            row.1.push(Input {
+                electric_per_heat: electric,
+                speed_share: speed,
+            });
+        }
+    }
+    Ok(row)
 }
 
 /// Flow temperatures between which a row is solved: what its own and its neighbours' cells can be asked for. Outside it the

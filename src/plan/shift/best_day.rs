@@ -106,11 +106,11 @@ fn place((low, high): (f64, f64), value: f64, nodes: usize) -> (usize, f64) {
 impl<'a> Search<'a> {
     fn new(base: &'a Plan, site: &'a Site, system: &'a System, shifting: &'a Shifting) -> Self {
         let mut shifted = base.clone();
-        for below_c in &mut shifted.backup_below_c {
+        for below_c in shifted.backup_below_c.iter_mut() {
             *below_c -= shifting.rooms.below_k;
         }
         shifted.asked_c = Some(base.set_point_c.clone());
-        shifted.store_shift_k = Some(vec![0.0; site.civil.len()]);
+        shifted.store_shift_k = Some(vec![0.0; site.civil.len()].into());
         let store = system.home.hot_water.as_ref().and_then(|water| water.store);
         let stores = store.map_or((0.0, 1.0), |store| {
             let due_c = store.set_point_c - store.hysteresis_k - shifting.store.below_k;

@@ -37,7 +37,7 @@ pub fn timer(plan: &Plan, civil: &[CivilHour], shifting: &Shifting) -> Plan {
             store_shift_k[hour] = store_k;
         }
     }
-    shifted.store_shift_k = Some(store_shift_k);
+    shifted.store_shift_k = Some(store_shift_k.into());
     shifted
 }
 
