@@ -10,6 +10,9 @@ use winterledger::brief::Brief;
 use winterledger::heatpump::{ColdSide, Delivered, Duty, HeatPump, Sheet, fit};
 use winterledger::study::odds::{Hypercube, Sampler, shares};
 
+/// A function of a point of the unit cube.
+type Function<'a> = &'a dyn Fn(&[f64]) -> f64;
+
 fn run(arguments: &[&str], threads: &str) -> Output {
     Command::cargo_bin("winterledger")
         .unwrap()
@@ -44,9 +47,8 @@ fn shares_agree_with_another_program() {
             .map(|(u, a)| ((4.0 * u - 2.0).abs() + a) / (1.0 + a))
             .product()
     };
-    let functions: [(&str, usize, &dyn Fn(&[f64]) -> f64); 2] =
-        [("ishigami", 3, &ishigami), ("sobol_g", 4, &g)];
-    for (name, quantities, function) in functions {
+    let ishigami: Function<'_> = &ishigami;
+    for (name, quantities, function) in [("ishigami", 3, ishigami), ("sobol_g", 4, &g)] {
         let cube = Hypercube {
             seed: 5,
             points: 100,

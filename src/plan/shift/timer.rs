@@ -82,7 +82,7 @@ mod tests {
         for (hour, store_k) in store.into_iter().enumerate() {
             let cheap = hour % 24 < 5;
             assert_eq!(plan.set_point_c[hour], if cheap { 21.5 } else { 19.5 });
-            assert_eq!(store_k, if cheap { 5.0 } else { 0.0 });
+            assert_eq!(*store_k, if cheap { 5.0 } else { 0.0 });
             assert_eq!(plan.backup_below_c[hour], 19.0);
         }
     }
