@@ -4,7 +4,8 @@
 //! Root may write where permissions forbid it, so a read-only folder is played by one that the kernel refuses to everybody; where
 //! the tests do not run as root, permissions are tried too. A full disk is a small file system of its own where one may be mounted,
 //! the kernel's limit on a file's size everywhere, and the device that is always full.
-#![cfg(all(test, unix))]
+#![cfg(unix)]
+#![cfg(test)]
 
 use std::collections::BTreeMap;
 use std::fs;
