@@ -156,6 +156,15 @@ fn tariff(
         .parent()
         .unwrap_or_else(|| "".as_ref());
     let tariff = check.take(Tariff::from_text(&name, &text, beside))?;
+    for hourly in tariff
+        .prices
+        .iter()
+        .filter_map(|prices| prices.hourly.as_ref())
+    {
+        // Read with the tariff; here its checksum is kept.
+        let path = std::path::Path::new(path).with_file_name(&hourly.file);
+        check.take(folder.bytes(&path.to_string_lossy()));
+    }
     if tariff.fuel != fuel {
         let span = leaf.as_ref().map(Leaf::span).unwrap_or_default();
         check.refuse(

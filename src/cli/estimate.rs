@@ -199,10 +199,14 @@ fn files(
         files.push(NewFile::new(path("svg"), drawn.picture.svg()?));
         files.push(NewFile::new(path("png"), png));
     }
-    let phone = pictures(&Material {
-        locale: material.locale.on_a_phone(),
+    let locale = material.locale.on_a_phone();
+    let mut phone = pictures(&Material {
+        locale,
         ..*material
     })?;
+    if let Some(blocks) = samples {
+        phone.extend(odds_pictures(case, blocks, &locale)?);
+    }
     let page = report_html(material, &drawn, &phone)?;
     files.push(NewFile::new(folder.join(REPORT), page));
     #[cfg(feature = "pdf")]

@@ -26,7 +26,7 @@ const OTHER_STEPS: usize = 12;
 #[command(after_help = "\
 Examples:
   winterledger study                                     the built-in demonstration home
-  winterledger study briefs/terrace.toml --out out       study.json and pictures
+  winterledger study briefs/terrace.toml --out study     study.json and pictures
   winterledger study --choice \"Air source, larger radiators\"
   winterledger study --over \"heat loss\" --against \"design flow temperature\" --out out --force
 

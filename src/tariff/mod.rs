@@ -79,6 +79,8 @@ pub struct Prices {
 /// A price for every hour.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Hourly {
+    /// File of the prices, relative to the tariff's folder.
+    pub file: String,
     /// Currency units per gross kilowatt-hour, as the file gives them.
     pub per_kwh: Series,
     /// What they are multiplied by; a meter keeps them as given, so that it outlasts a change of price level.

@@ -66,8 +66,8 @@ impl Quantiles {
 pub struct Chance {
     /// Share of the sample, 0 to 1.
     pub chance: f64,
-    /// Standard error from the scatter of the blocks; infinite with a single block. Where all samples or none agree it is 1 in
-    /// n + 2, the deviation that Laplace's rule of succession leaves.
+    /// Standard error from the scatter of the blocks; infinite with a single block. It is never below 1 in n + 2, the deviation that
+    /// Laplace's rule of succession leaves where all samples agree: blocks that happen to be alike prove nothing finer.
     pub error: f64,
 }
 
@@ -98,10 +98,8 @@ impl Chance {
             / (count - 1.0);
         Some(Self {
             chance,
-            error: if shares.len() > 1 && (chance <= 0.0 || chance >= 1.0) {
-                1.0 / (samples as f64 + 2.0)
-            } else if shares.len() > 1 {
-                (variance / count).sqrt()
+            error: if shares.len() > 1 {
+                (variance / count).sqrt().max(1.0 / (samples as f64 + 2.0))
             } else {
                 f64::INFINITY
             },

@@ -220,8 +220,9 @@ mod tests {
             .iter()
             .map(|p| normal.at(p[0]).unwrap() + normal.at(p[1]).unwrap())
             .collect();
-        // 24 classes of equal number cut the tails of a normal score short by about a hundredth.
-        check(&x, &y, &[0.8, 0.8], 0.02);
+        // 24 classes of equal number cut the tails of a normal score short: 0.987 of its variance lies between them, which makes 0.789.
+        // What goes straight with the other is taken off by its share of one, where the truth is straight in the score: as much again.
+        check(&x, &y, &[0.8, 0.8], 0.03);
     }
 
     #[test]

@@ -226,9 +226,11 @@ fn read_hourly(
         zone: zone.unwrap_or(chrono_tz::Tz::UTC),
         within_hour: WithinHour::Mean,
     };
-    let mut series = check.take(read_csv(&folder.join(file?), &layout))?;
+    let file = file?;
+    let mut series = check.take(read_csv(&folder.join(&file), &layout))?;
     series.scale(one?);
     Some(Hourly {
+        file,
         per_kwh: series,
         times: 1.0,
         every_year: every_year.unwrap_or(false),
