@@ -26,7 +26,7 @@ Examples:
   winterledger odds                            the built-in demonstration home
   winterledger odds briefs/terrace.toml --samples 2000
   winterledger odds --precision 1              until every chance is known to 1 %
-  winterledger odds --out out                  the pictures, odds.json and every sample (CSV)")]
+  winterledger odds --out odds                 the pictures, odds.json and every sample (CSV)")]
 pub struct Args {
     /// Brief (TOML); without one, the built-in demonstration home.
     brief: Option<PathBuf>,
