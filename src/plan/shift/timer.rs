@@ -79,7 +79,7 @@ mod tests {
     fn cheap_hours_are_warm_and_the_others_coast() {
         let plan = shifted(|hour| if hour % 24 < 5 { 0.09 } else { 0.30 });
         let store = plan.store_shift_k.unwrap();
-        for (hour, store_k) in store.into_iter().enumerate() {
+        for (hour, store_k) in store.iter().enumerate() {
             let cheap = hour % 24 < 5;
             assert_eq!(plan.set_point_c[hour], if cheap { 21.5 } else { 19.5 });
             assert_eq!(*store_k, if cheap { 5.0 } else { 0.0 });
