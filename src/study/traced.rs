@@ -15,7 +15,7 @@ pub enum Wanted {
     /// The coldest outdoors.
     Coldest,
     /// The one in which the machine did worst for the rooms, or for hot water where it never heats rooms. Hours in which it gave less
-    /// than [`WORTH_LOOKING_AT`] do not count: a few minutes' run in June has the worst COP of all and matters to nobody.
+    /// than a tenth of the design load do not count: a few minutes' run in June has the worst COP of all and matters to nobody.
     WorstCop,
     /// The one that cost most.
     Dearest,
