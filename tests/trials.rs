@@ -19,10 +19,32 @@ fn root() -> &'static Path {
 
 /// What the years of a brief's only choice come to.
 fn sums(home: &str, weather: &str, choice: &str) -> Sums {
+    sums_in(home, weather, 0.0, choice)
+}
+
+/// A sample with every hour warmer by some kelvin.
+fn warmer(sample: &str, by_k: f64) -> String {
+    let path = root().join(format!("weather_samples/{sample}.csv"));
+    let text = fs::read_to_string(path).unwrap();
+    text.lines()
+        .map(|line| {
+            let mut fields: Vec<String> = line.split(',').map(str::to_owned).collect();
+            if let Some(celsius) = fields.get(1).and_then(|field| field.parse::<f64>().ok()) {
+                fields[1] = format!("{:.2}", celsius + by_k);
+            }
+            fields.join(",") + "\n"
+        })
+        .collect()
+}
+
+/// The same in a place warmer than the sample by some kelvin in every hour.
+fn sums_in(home: &str, weather: &str, warmer_k: f64, choice: &str) -> Sums {
+    let folder = tempfile::tempdir().unwrap();
+    fs::write(folder.path().join("weather.csv"), warmer(weather, warmer_k)).unwrap();
     let brief = format!(
         "{home}
 [weather]
-file = \"{root}/weather_samples/{weather}.csv\"
+file = \"weather.csv\"
 [energy]
 electricity = \"{root}/tariffs/flat_electricity.toml\"
 gas = \"{root}/tariffs/flat_gas.toml\"
@@ -36,7 +58,6 @@ backup = \"3 kW\"
 ",
         root = root().display(),
     );
-    let folder = tempfile::tempdir().unwrap();
     let path = folder.path().join("trial.toml");
     fs::write(&path, brief).unwrap();
     let case = Brief::read(&path).unwrap().case;
@@ -44,18 +65,8 @@ backup = \"3 kW\"
     outcomes[1].mean_sums()
 }
 
-/// Air source in the United Kingdom, Electrification of Heat: median of about 2.8 to 2.9 in a year at H4 (methods §3, read in a
-/// secondary source). Of its spread only that of the coldest day is known there: quartiles 2.20 and 2.70 about 2.44, which is −10 and
-/// +11 %. Taken for the year too, the middle half is 2.57 to 3.15.
-///
-/// A home like those in it: an ordinary gas-heated house, heat loss in the middle of what is met for a semi-detached one (methods
-/// §14: 180 to 280 W/K), in the mild maritime sample (mean 10.0 °C). The trial changed some radiators and designed for flow
-/// temperatures about 50 °C \[from memory\], not 55 °C as the old radiators would want and not 45 °C as new ones. Hot water is the
-/// measured 4 kWh a day (methods §11), at 50 °C. Machines of 2020 to 2022 were split R32 as often as anything \[from memory\]: the
-/// R32 sheet, scaled by its typical machine to the design load.
-#[test]
-fn air_source_in_a_mild_maritime_trial() {
-    let home = "
+/// The semi-detached home of both trials of the United Kingdom.
+const SEMI_DETACHED: &str = "
 [home]
 label = \"Semi-detached\"
 heat_loss = \"230 W/K\"
@@ -72,10 +83,24 @@ daily = \"115 L\"                  # 4.0 kWh from 10 to 40 °C
 store = \"200 L\"
 setpoint = \"50 °C\"
 ";
+
+/// Air source in the United Kingdom, Electrification of Heat: median of about 2.8 to 2.9 in a year at H4 (methods §3, read in a
+/// secondary source). Of its spread only that of the coldest day is known there: quartiles 2.20 and 2.70 about 2.44, which is −10 and
+/// +11 %. Taken for the year too, the middle half is 2.57 to 3.15.
+///
+/// A home like those in it: an ordinary gas-heated house, heat loss in the middle of what is met for a semi-detached one (methods
+/// §14: 180 to 280 W/K), in the mild maritime sample (mean 10.0 °C). The trial changed some radiators and designed for flow
+/// temperatures about 50 °C \[from memory\], not 55 °C as the old radiators would want and not 45 °C as new ones. Hot water is the
+/// measured 4 kWh a day (methods §11), at 50 °C. Machines of 2020 to 2022 were split R32 as often as anything \[from memory\]: the
+/// R32 sheet, scaled by its typical machine to the design load.
+#[test]
+fn air_source_in_a_mild_maritime_trial() {
     let choice = "kind = \"air-source\"
 typical_machine = \"air, R32, variable speed\"
 rated_output = \"7 kW\"";
-    let spf_h4 = sums(home, "morvane_sound", choice).spf_h4().unwrap();
+    let spf_h4 = sums(SEMI_DETACHED, "morvane_sound", choice)
+        .spf_h4()
+        .unwrap();
     assert!((2.57..=3.15).contains(&spf_h4), "{spf_h4}");
 }
 
@@ -151,4 +176,107 @@ y = \"0 m\"";
         spf_h3 < low_of_the_middle_half,
         "{spf_h3} is in the middle half now: say so above, and hold it"
     );
+}
+
+/// The ground-source home again, in a place like the trial's. Written down and committed before it was run; bands as they were.
+///
+/// The home above stands in the continental sample, whose mean is 8.5 °C and whose degree-days are 2951 K·d below 15.5 °C. That made its
+/// loop give 96 kWh a metre from ground of 9.8 °C, and its brine came to 0.1 °C weighted with heat. The trial was in Germany in the
+/// years 2014 to 2019. What is changed for it, each with its reason and whichever way it moves the figure:
+///
+/// - Air: the national means of those years, 10.3, 9.9, 9.5, 9.6, 10.5 and 10.3 °C \[German weather service, from memory\], are 10.0 °C,
+///   so that the sample is taken 1.5 K warmer in every hour (2553 K·d). Its cold spell stays, which is harder than those years.
+/// - Ground: bores of 80 m feel the decades before. Mean air of 1981 to 2010 was 8.9 °C \[same, from memory\], and ground under grass
+///   and snow is about 1 K warmer than air (Signorelli and Kohl 2004, Switzerland; Collins 1925, 1 to 1.7 K in wells of the United States;
+///   both \[from memory\]): 9.9 °C at the surface, 11.1 °C with the gradient at the middle of the bores. Undisturbed ground there is
+///   measured at 10 to 12 °C (common practice, no source).
+/// - Flow: the trial's 37 °C over the year \[from memory\] is met by a design flow of 51 °C, not of 45 °C: with this weather and the gains of
+///   the home, weighted with heat, 45 °C come to 33.4 °C and 51 °C to 36.7 °C (radiators of exponent 1.3, reckoned beforehand). This
+///   lowers the figure.
+/// - Age: loops of a trial of five years, most put in not long before \[from memory\]: year 5, not 15.
+///
+/// Bores, machine, hot water stay. The air source is run in the same home: a change of place must keep it in its own band too.
+const IN_THE_TRIALS_PLACE: &str = "
+[home]
+label = \"Detached house\"
+heat_loss = \"240 W/K\"
+design_outdoor = \"-12 °C\"
+floor_area = \"150 m²\"
+indoor = \"20 °C\"
+time_zone = \"Europe/Berlin\"
+[home.emitters]
+kind = \"radiators\"
+flow = \"51 °C\"
+return = \"44 °C\"
+[home.hot_water]
+daily = \"170 L\"
+store = \"300 L\"
+setpoint = \"50 °C\"
+";
+/// By how much that place is warmer than the continental sample, K.
+const WARMER_K: f64 = 1.5;
+
+#[test]
+fn air_source_in_the_place_of_the_trial() {
+    let choice = "kind = \"air-source\"
+typical_machine = \"air, R290, variable speed\"
+rated_output = \"9 kW\"";
+    let spf_h3 = sums_in(IN_THE_TRIALS_PLACE, "ostrel_plain", WARMER_K, choice)
+        .spf_h3()
+        .unwrap();
+    println!("air, place of the trial: H3 {spf_h3:.3}");
+    assert!((2.88..=3.32).contains(&spf_h3), "{spf_h3}");
+}
+
+#[test]
+fn ground_source_in_the_place_of_the_trial() {
+    let choice = "kind = \"ground-source\"
+typical_machine = \"ground, R410A, variable speed\"
+rated_output = \"9 kW\"
+shown_year = 5
+[choice.ground]
+soil = \"sandstone\"
+surface_mean = \"9.9 °C\"
+[[choice.bore]]
+depth = \"80 m\"
+x = \"0 m\"
+y = \"0 m\"
+[[choice.bore]]
+depth = \"80 m\"
+x = \"6 m\"
+y = \"0 m\"";
+    let spf_h3 = sums_in(IN_THE_TRIALS_PLACE, "ostrel_plain", WARMER_K, choice)
+        .spf_h3()
+        .unwrap();
+    println!("ground, place of the trial: H3 {spf_h3:.3}");
+    assert!((3.81..=4.39).contains(&spf_h3), "{spf_h3}");
+}
+
+/// Ground source in the United Kingdom, RHPP 2017 final: H2 2.81 and H4 2.71 in the median (methods §3, \[from memory\]). Its spread is not
+/// known there; with that of the other trial of the same country, −10 and +11 %, the middle half is 2.44 to 3.01 at H4. Written down
+/// and committed before it was run.
+///
+/// The semi-detached home of the air source above. Machines of 2009 to 2014 had one speed (common practice, no source): the R134a sheet.
+/// Bores by the rule of that country's scheme, about 36 W/m for ground of 1.7 W/(m K) at 2000 hours \[from memory\]: 5.4 kW drawn at
+/// 7 kW, so two of 75 m in wet clay. Year 3. Its ground: mean air of that sample, 10.0 °C, as the program takes it.
+#[test]
+fn ground_source_in_a_mild_maritime_trial() {
+    let choice = "kind = \"ground-source\"
+typical_machine = \"ground, R134a, fixed speed\"
+rated_output = \"7 kW\"
+shown_year = 3
+[choice.ground]
+soil = \"wet clay\"
+[[choice.bore]]
+depth = \"75 m\"
+x = \"0 m\"
+y = \"0 m\"
+[[choice.bore]]
+depth = \"75 m\"
+x = \"6 m\"
+y = \"0 m\"";
+    let sums = sums(SEMI_DETACHED, "morvane_sound", choice);
+    let (spf_h2, spf_h4) = (sums.spf_h2().unwrap(), sums.spf_h4().unwrap());
+    println!("ground, mild maritime trial: H2 {spf_h2:.3}, H4 {spf_h4:.3}");
+    assert!((2.44..=3.01).contains(&spf_h4), "{spf_h4}");
 }
