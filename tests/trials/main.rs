@@ -6,39 +6,21 @@
 //! What came is written above each test and is not to be tuned.
 #![cfg(test)]
 
+mod waterfall;
+
 use std::fs;
 use std::path::Path;
 
 use winterledger::brief::Brief;
-use winterledger::study::Outcome;
+use winterledger::study::Case;
 use winterledger::year::Sums;
 
 fn root() -> &'static Path {
     Path::new(env!("CARGO_MANIFEST_DIR"))
 }
 
-/// What the years of a brief's only choice come to.
-fn sums(home: &str, weather: &str, choice: &str) -> Sums {
-    sums_in(home, weather, 0.0, choice)
-}
-
-/// A sample with every hour warmer by some kelvin.
-fn warmer(sample: &str, by_k: f64) -> String {
-    let path = root().join(format!("weather_samples/{sample}.csv"));
-    let text = fs::read_to_string(path).unwrap();
-    text.lines()
-        .map(|line| {
-            let mut fields: Vec<String> = line.split(',').map(str::to_owned).collect();
-            if let Some(celsius) = fields.get(1).and_then(|field| field.parse::<f64>().ok()) {
-                fields[1] = format!("{:.2}", celsius + by_k);
-            }
-            fields.join(",") + "\n"
-        })
-        .collect()
-}
-
-/// The same in a place warmer than the sample by some kelvin in every hour.
-fn sums_in(home: &str, weather: &str, warmer_k: f64, choice: &str) -> Sums {
+/// The brief of a home in a sample made warmer by some kelvin, with one choice, read.
+fn case(home: &str, weather: &str, warmer_k: f64, choice: &str) -> Case {
     let folder = tempfile::tempdir().unwrap();
     fs::write(folder.path().join("weather.csv"), warmer(weather, warmer_k)).unwrap();
     let brief = format!(
@@ -60,10 +42,81 @@ backup = \"3 kW\"
     );
     let path = folder.path().join("trial.toml");
     fs::write(&path, brief).unwrap();
-    let case = Brief::read(&path).unwrap().case;
-    let outcomes: Vec<Outcome> = case.run().unwrap();
-    outcomes[1].mean_sums()
+    Brief::read(&path).unwrap().case
 }
+
+/// A sample with every hour warmer by some kelvin.
+fn warmer(sample: &str, by_k: f64) -> String {
+    let path = root().join(format!("weather_samples/{sample}.csv"));
+    let text = fs::read_to_string(path).unwrap();
+    text.lines()
+        .map(|line| {
+            let mut fields: Vec<String> = line.split(',').map(str::to_owned).collect();
+            if let Some(celsius) = fields.get(1).and_then(|field| field.parse::<f64>().ok()) {
+                fields[1] = format!("{:.2}", celsius + by_k);
+            }
+            fields.join(",") + "\n"
+        })
+        .collect()
+}
+
+/// What the years of a brief's only choice come to.
+fn sums(home: &str, weather: &str, warmer_k: f64, choice: &str) -> Sums {
+    let case = case(home, weather, warmer_k, choice);
+    case.run_one(&case.contenders[1], None).unwrap().mean_sums()
+}
+
+const AIR_R32: &str = "kind = \"air-source\"
+typical_machine = \"air, R32, variable speed\"
+rated_output = \"7 kW\"";
+const AIR_R410A: &str = "kind = \"air-source\"
+typical_machine = \"air, R410A, fixed speed\"
+rated_output = \"7 kW\"";
+const AIR_R290: &str = "kind = \"air-source\"
+typical_machine = \"air, R290, variable speed\"
+rated_output = \"9 kW\"";
+const GROUND_R410A: &str = "kind = \"ground-source\"
+typical_machine = \"ground, R410A, variable speed\"
+rated_output = \"9 kW\"
+[choice.ground]
+soil = \"sandstone\"
+[[choice.bore]]
+depth = \"80 m\"
+x = \"0 m\"
+y = \"0 m\"
+[[choice.bore]]
+depth = \"80 m\"
+x = \"6 m\"
+y = \"0 m\"";
+const GROUND_R410A_IN_PLACE: &str = "kind = \"ground-source\"
+typical_machine = \"ground, R410A, variable speed\"
+rated_output = \"9 kW\"
+shown_year = 5
+[choice.ground]
+soil = \"sandstone\"
+surface_mean = \"9.9 °C\"
+[[choice.bore]]
+depth = \"80 m\"
+x = \"0 m\"
+y = \"0 m\"
+[[choice.bore]]
+depth = \"80 m\"
+x = \"6 m\"
+y = \"0 m\"";
+const GROUND_R134A: &str = "kind = \"ground-source\"
+typical_machine = \"ground, R134a, fixed speed\"
+rated_output = \"7 kW\"
+shown_year = 3
+[choice.ground]
+soil = \"wet clay\"
+[[choice.bore]]
+depth = \"75 m\"
+x = \"0 m\"
+y = \"0 m\"
+[[choice.bore]]
+depth = \"75 m\"
+x = \"6 m\"
+y = \"0 m\"";
 
 /// The semi-detached home of both trials of the United Kingdom.
 const SEMI_DETACHED: &str = "
@@ -95,10 +148,7 @@ setpoint = \"50 °C\"
 /// R32 sheet, scaled by its typical machine to the design load.
 #[test]
 fn air_source_in_a_mild_maritime_trial() {
-    let choice = "kind = \"air-source\"
-typical_machine = \"air, R32, variable speed\"
-rated_output = \"7 kW\"";
-    let spf_h4 = sums(SEMI_DETACHED, "morvane_sound", choice)
+    let spf_h4 = sums(SEMI_DETACHED, "morvane_sound", 0.0, AIR_R32)
         .spf_h4()
         .unwrap();
     assert!((2.57..=3.15).contains(&spf_h4), "{spf_h4}");
@@ -143,10 +193,7 @@ setpoint = \"50 °C\"
 
 #[test]
 fn air_source_in_existing_buildings_inland() {
-    let choice = "kind = \"air-source\"
-typical_machine = \"air, R290, variable speed\"
-rated_output = \"9 kW\"";
-    let spf_h3 = sums(EXISTING_BUILDING, "ostrel_plain", choice)
+    let spf_h3 = sums(EXISTING_BUILDING, "ostrel_plain", 0.0, AIR_R290)
         .spf_h3()
         .unwrap();
     assert!((2.88..=3.32).contains(&spf_h3), "{spf_h3}");
@@ -154,20 +201,7 @@ rated_output = \"9 kW\"";
 
 #[test]
 fn ground_source_in_existing_buildings_inland() {
-    let choice = "kind = \"ground-source\"
-typical_machine = \"ground, R410A, variable speed\"
-rated_output = \"9 kW\"
-[choice.ground]
-soil = \"sandstone\"
-[[choice.bore]]
-depth = \"80 m\"
-x = \"0 m\"
-y = \"0 m\"
-[[choice.bore]]
-depth = \"80 m\"
-x = \"6 m\"
-y = \"0 m\"";
-    let spf_h3 = sums(EXISTING_BUILDING, "ostrel_plain", choice)
+    let spf_h3 = sums(EXISTING_BUILDING, "ostrel_plain", 0.0, GROUND_R410A)
         .spf_h3()
         .unwrap();
     assert!((3.3..=4.7).contains(&spf_h3), "{spf_h3}");
@@ -218,10 +252,7 @@ const WARMER_K: f64 = 1.5;
 
 #[test]
 fn air_source_in_the_place_of_the_trial() {
-    let choice = "kind = \"air-source\"
-typical_machine = \"air, R290, variable speed\"
-rated_output = \"9 kW\"";
-    let spf_h3 = sums_in(IN_THE_TRIALS_PLACE, "ostrel_plain", WARMER_K, choice)
+    let spf_h3 = sums(IN_THE_TRIALS_PLACE, "ostrel_plain", WARMER_K, AIR_R290)
         .spf_h3()
         .unwrap();
     println!("air, place of the trial: H3 {spf_h3:.3}");
@@ -230,26 +261,27 @@ rated_output = \"9 kW\"";
 
 #[test]
 fn ground_source_in_the_place_of_the_trial() {
-    let choice = "kind = \"ground-source\"
-typical_machine = \"ground, R410A, variable speed\"
-rated_output = \"9 kW\"
-shown_year = 5
-[choice.ground]
-soil = \"sandstone\"
-surface_mean = \"9.9 °C\"
-[[choice.bore]]
-depth = \"80 m\"
-x = \"0 m\"
-y = \"0 m\"
-[[choice.bore]]
-depth = \"80 m\"
-x = \"6 m\"
-y = \"0 m\"";
-    let spf_h3 = sums_in(IN_THE_TRIALS_PLACE, "ostrel_plain", WARMER_K, choice)
-        .spf_h3()
-        .unwrap();
+    let spf_h3 = sums(
+        IN_THE_TRIALS_PLACE,
+        "ostrel_plain",
+        WARMER_K,
+        GROUND_R410A_IN_PLACE,
+    )
+    .spf_h3()
+    .unwrap();
     println!("ground, place of the trial: H3 {spf_h3:.3}");
     assert!((3.81..=4.39).contains(&spf_h3), "{spf_h3}");
+}
+
+/// Air source of the same trial, RHPP 2017 final: H2 2.65 and H4 2.44 in the median (methods §3, \[from memory\]), so that air and ground
+/// stand beside each other as that trial saw them. The middle half by the same −10 and +11 %: 2.20 to 2.71 at H4. Written down and
+/// committed before it was run: the semi-detached home, and a machine of one speed as above.
+#[test]
+fn air_source_of_one_speed_in_a_mild_maritime_trial() {
+    let sums = sums(SEMI_DETACHED, "morvane_sound", 0.0, AIR_R410A);
+    let (spf_h2, spf_h4) = (sums.spf_h2().unwrap(), sums.spf_h4().unwrap());
+    println!("air of one speed, mild maritime trial: H2 {spf_h2:.3}, H4 {spf_h4:.3}");
+    assert!((2.20..=2.71).contains(&spf_h4), "{spf_h4}");
 }
 
 /// Ground source in the United Kingdom, RHPP 2017 final: H2 2.81 and H4 2.71 in the median (methods §3, \[from memory\]). Its spread is not
@@ -261,21 +293,7 @@ y = \"0 m\"";
 /// 7 kW, so two of 75 m in wet clay. Year 3. Its ground: mean air of that sample, 10.0 °C, as the program takes it.
 #[test]
 fn ground_source_in_a_mild_maritime_trial() {
-    let choice = "kind = \"ground-source\"
-typical_machine = \"ground, R134a, fixed speed\"
-rated_output = \"7 kW\"
-shown_year = 3
-[choice.ground]
-soil = \"wet clay\"
-[[choice.bore]]
-depth = \"75 m\"
-x = \"0 m\"
-y = \"0 m\"
-[[choice.bore]]
-depth = \"75 m\"
-x = \"6 m\"
-y = \"0 m\"";
-    let sums = sums(SEMI_DETACHED, "morvane_sound", choice);
+    let sums = sums(SEMI_DETACHED, "morvane_sound", 0.0, GROUND_R134A);
     let (spf_h2, spf_h4) = (sums.spf_h2().unwrap(), sums.spf_h4().unwrap());
     println!("ground, mild maritime trial: H2 {spf_h2:.3}, H4 {spf_h4:.3}");
     assert!((2.44..=3.01).contains(&spf_h4), "{spf_h4}");
