@@ -11,8 +11,8 @@ use winterledger::study::Case;
 use winterledger::year::{Heating, Ledger, Row, Sums};
 
 use super::{
-    AIR_R32, AIR_R290, EXISTING_BUILDING, GROUND_R134A, GROUND_R410A, GROUND_R410A_IN_PLACE,
-    IN_THE_TRIALS_PLACE, SEMI_DETACHED, WARMER_K, case,
+    AIR_R32, AIR_R290, AIR_R410A, EXISTING_BUILDING, GROUND_R134A, GROUND_R410A,
+    GROUND_R410A_IN_PLACE, IN_THE_TRIALS_PLACE, SEMI_DETACHED, WARMER_K, case,
 };
 
 /// Flow minus return of the standard rating, EN 14511, K.
@@ -192,7 +192,8 @@ impl Walk {
             } else {
                 format!("{:+.1} %", 100.0 * (self.factor(i) - 1.0))
             };
-            writeln!(text, "  {what:<36} {spf:>6.2} {change:>9}").unwrap();
+            let line = format!("  {what:<36} {spf:>6.2} {change:>9}");
+            writeln!(text, "{}", line.trim_end()).unwrap();
         }
         let (boundary, spf) = match at {
             At::H3(spf) => ("H3", spf),
@@ -219,7 +220,7 @@ fn from_the_sheet_to_the_trial() {
             At::H4(2.85),
         ),
         (
-            "Ground, mild maritime",
+            "Ground of one speed, mild maritime",
             case(SEMI_DETACHED, "morvane_sound", 0.0, GROUND_R134A),
             "RHPP 2017",
             At::H4(2.71),
