@@ -47,29 +47,42 @@ struct Axis {
     low: f64,
     step: f64,
     count: usize,
+    /// Nodes a unit: the inverse of the step.
+    per_step: f64,
+    /// The last node that has another after it.
+    last: f64,
 }
 
 impl Axis {
+    fn new(low: f64, step: f64, count: usize) -> Self {
+        Self {
+            low,
+            step,
+            count,
+            per_step: 1.0 / step,
+            last: count.saturating_sub(2) as f64,
+        }
+    }
+
     fn node(&self, i: usize) -> f64 {
         self.low + self.step * i as f64
     }
 
-    /// The node below and the share of the way to the next; the ends hold beyond them.
+    /// The node below and the share of the way to the next; the ends hold beyond them, and NaN is at the low one.
+    #[inline]
     fn place(&self, at: f64) -> (usize, f64) {
-        let last = self.count.saturating_sub(2) as u32;
-        let steps = (at - self.low) / self.step;
-        // Below the axis and NaN become 0.
-        let below = (steps as u32).min(last);
-        (below as usize, (steps - f64::from(below)).clamp(0.0, 1.0))
+        let steps = ((at - self.low) * self.per_step).max(0.0);
+        let below = steps.min(self.last) as i32;
+        (below as usize, (steps - f64::from(below)).min(1.0))
     }
 }
 
 /// A place in a map: the four nodes about a condition and their weights. An hour asks several outputs at one place.
 pub(super) struct Spot<'a> {
-    fraction: &'a Axis,
-    /// Inputs over the fraction at the cooler and at the warmer source, each with the cooler and the hotter flow one after the other.
-    rows: [&'a [Input]; 2],
-    /// Weights of the same four.
+    map: &'a Map,
+    /// The cooler flow at the cooler and at the warmer source.
+    nodes: [usize; 2],
+    /// Weights of these and of the hotter flow beside each.
     weights: [[f64; 2]; 2],
     /// Greatest and least output, kW.
     pub range: Range,
@@ -77,70 +90,73 @@ pub(super) struct Spot<'a> {
 
 impl Spot<'_> {
     /// Input at a fraction of the way from least to greatest output.
+    #[inline]
     pub fn input(&self, fraction: f64) -> Input {
-        let n = self.fraction.count;
-        let (k, x) = self.fraction.place(fraction);
+        let n = self.map.fraction.count;
+        let (k, x) = self.map.fraction.place(fraction);
         let mut input = Input {
             electric_per_heat: 0.0,
             speed_share: 0.0,
         };
-        for (row, weights) in self.rows.iter().zip(self.weights) {
-            for (from, w) in [k, k + n].into_iter().zip(weights) {
+        for (node, weights) in self.nodes.into_iter().zip(self.weights) {
+            let cooler = node * n + k;
+            for (from, w) in [cooler, cooler + n].into_iter().zip(weights) {
                 // Always there: a place is within its axis.
-                let Some([low, high]) = row.get(from..from + 2) else {
-                    continue;
-                };
-                let (below, above) = (w * (1.0 - x), w * x);
-                input.electric_per_heat +=
-                    below * low.electric_per_heat + above * high.electric_per_heat;
-                input.speed_share += below * low.speed_share + above * high.speed_share;
+                if let Some([low, high]) = self.map.inputs.get(from..from + 2) {
+                    let between = |low: f64, high: f64| w * (low + x * (high - low));
+                    input.electric_per_heat +=
+                        between(low.electric_per_heat, high.electric_per_heat);
+                    input.speed_share += between(low.speed_share, high.speed_share);
+                }
             }
         }
         input
+    }
+
+    /// How the least output changes with flow temperature at this source, kW/K.
+    #[inline]
+    pub fn least_kw_per_k(&self) -> f64 {
+        let mut change_kw = 0.0;
+        for (node, [w, v]) in self.nodes.into_iter().zip(self.weights) {
+            if let Some([cooler, hotter]) = self.map.ranges.get(node..node + 2) {
+                change_kw += (w + v) * (hotter.least_kw - cooler.least_kw);
+            }
+        }
+        change_kw * self.map.flow.per_step
     }
 }
 
 impl Map {
     /// A condition's place in the map, from which range and inputs are read.
+    #[inline]
     pub(super) fn spot(&self, source_c: f64, flow_c: f64) -> Spot<'_> {
-        let (at, weights) = self.place(source_c, flow_c);
-        let n = self.fraction.count;
-        Spot {
-            fraction: &self.fraction,
-            rows: at.map(|node| &self.inputs[node * n..(node + 2) * n]),
-            weights,
-            range: self.range_at(at, weights),
-        }
-    }
-
-    /// The node with the cooler flow at the cooler and at the warmer source, and the weights of these and of their hotter
-    /// neighbours.
-    fn place(&self, source_c: f64, flow_c: f64) -> ([usize; 2], [[f64; 2]; 2]) {
         let (i, s) = self.source.place(source_c);
         let (j, f) = self.flow.place(flow_c);
-        let at = i * self.flow.count + j;
+        let node = i * self.flow.count + j;
+        let nodes = [node, node + self.flow.count];
         let weights = [1.0 - s, s].map(|w| [w * (1.0 - f), w * f]);
-        ([at, at + self.flow.count], weights)
-    }
-
-    fn range_at(&self, at: [usize; 2], weights: [[f64; 2]; 2]) -> Range {
         let mut range = Range {
             greatest_kw: 0.0,
             least_kw: 0.0,
         };
-        for (node, [w, v]) in at.into_iter().zip(weights) {
+        for (node, [w, v]) in nodes.into_iter().zip(weights) {
+            // Always there: a place is within its axis.
             if let Some([cooler, hotter]) = self.ranges.get(node..node + 2) {
                 range.greatest_kw += w * cooler.greatest_kw + v * hotter.greatest_kw;
                 range.least_kw += w * cooler.least_kw + v * hotter.least_kw;
             }
         }
-        range
+        Spot {
+            map: self,
+            nodes,
+            weights,
+            range,
+        }
     }
 
     /// Greatest and least output at a condition, kW.
     pub fn range(&self, source_c: f64, flow_c: f64) -> Range {
-        let (at, weights) = self.place(source_c, flow_c);
-        self.range_at(at, weights)
+        self.spot(source_c, flow_c).range
     }
 
     /// Input at a fraction of the way from least to greatest output.
@@ -186,11 +202,7 @@ mod tests {
 
     #[test]
     fn an_axis_holds_its_ends() {
-        let axis = Axis {
-            low: -20.0,
-            step: 1.0,
-            count: 56,
-        };
+        let axis = Axis::new(-20.0, 1.0, 56);
         assert_eq!(axis.place(-30.0), (0, 0.0));
         assert_eq!(axis.place(40.0), (54, 1.0));
         assert_eq!(axis.place(-19.5), (0, 0.5));

@@ -24,28 +24,18 @@ impl Map {
     /// # Errors
     /// [`SolveError`] where the machine cannot run inside its limits.
     pub fn build(machine: &FittedMachine, limits: &Limits) -> Result<Self, SolveError> {
-        let source = Axis {
-            low: limits.lowest_source_c.floor(),
-            step: 1.0,
-            count: (limits.highest_source_c.ceil() - limits.lowest_source_c.floor()).max(1.0)
-                as usize
-                + 1,
-        };
+        let (coldest, warmest) = (
+            limits.lowest_source_c.floor(),
+            limits.highest_source_c.ceil(),
+        );
+        let source = Axis::new(coldest, 1.0, (warmest - coldest).max(1.0) as usize + 1);
         let span = (limits.highest_flow_anywhere() - LOWEST_FLOW_C).max(1.0);
         let steps = (span / FLOW_STEP_K).ceil();
-        let flow = Axis {
-            low: LOWEST_FLOW_C,
-            step: span / steps,
-            count: steps as usize + 1,
-        };
+        let flow = Axis::new(LOWEST_FLOW_C, span / steps, steps as usize + 1);
         let variable = machine.machine.speeds != Speeds::Fixed;
         // A machine of one speed has one output, whatever the fraction.
         let steps = if variable { FRACTION_STEPS } else { 1 };
-        let fraction = Axis {
-            low: 0.0,
-            step: 1.0 / steps as f64,
-            count: steps + 1,
-        };
+        let fraction = Axis::new(0.0, 1.0 / steps as f64, steps + 1);
         let coarse_fractions = chebyshev(0.0, 1.0, if variable { FRACTION_NODES } else { 1 });
         let fraction_weights: Vec<_> = (0..fraction.count)
             .map(|i| {
