@@ -4,13 +4,20 @@
 //! raised; what is computed per hour is a handful of look-ups and, in damp cold, a few exponentials.
 
 use super::duty::{ColdSide, Delivered, Duty, Flags};
+use super::frost::LEAST_LEFT;
 use super::heat_pump::HeatPump;
-use super::part_load::{running_rise_k, start_up_loss_kw, starts_per_hour};
-use super::steady::{Held, Secant, Steady, Wanted};
+use super::part_load::{rise_per_share_k, running_rise_k, start_up_loss_kw, starts_per_hour};
+use super::steady::{Balance, Held, Steady, Wanted, usual_draw_kw};
 use crate::fault::{self, Fault};
 
-/// Change of the running flow temperature below which its substitution ends, K (3e-6 of the electricity), and the most substitutions.
-const RISE_TOLERANCE_K: f64 = 1e-4;
+/// Change of the running flow temperature below which its search ends, K: what a Newton step that short leaves is less than 1e-4 K, 3e-6
+/// of the electricity.
+const RISE_STEP_K: f64 = 0.01;
+/// Change of the share that frost leaves of the output below which the search ends: 1e-4 K of a rise of 10 K.
+const LEFT_TOLERANCE: f64 = 1e-5;
+/// A Newton step is at most as long as if this share of a change of flow were left by its feedback.
+const LEAST_STIFFNESS: f64 = 0.5;
+/// Most steps of either.
 const MOST_RISE_STEPS: usize = 30;
 /// Difference of wanted and greatest heat that is no shortfall, relative: rounding.
 const ENOUGH: f64 = 1e-9;
@@ -50,27 +57,37 @@ impl HeatPump {
         };
         let on_and_off = OnAndOff {
             pump: self,
+            cold,
+            moisture,
             spread_k: duty.spread_k,
             wanted_kw,
             flow_c,
             highest_c,
         };
-        // Where neither frost nor a falling source comes into it, the map's least output alone tells that it goes on and off.
-        let plain = moisture == 0.0 && cold.k_per_kw == 0.0 && !duty.at_full_output;
-        let (mut steady, flow_c, mut share) =
-            if plain && wanted_kw < self.least_kw_at(cold.open_c, flow_c) {
-                on_and_off.on_the_map(cold)
-            } else {
+        // Far below the least output it goes on and off, whatever frost and the source's fall do.
+        let source_c = cold.open_c - cold.k_per_kw * self.scale * usual_draw_kw(wanted_kw);
+        let frosty_left = if moisture > 0.0 { LEAST_LEFT } else { 1.0 };
+        let surely =
+            !duty.at_full_output && wanted_kw < self.least_at(source_c, flow_c).0 * frosty_left;
+        let going_on_and_off = if surely {
+            Some(on_and_off.from(source_c, 1.0))
+        } else {
+            None
+        };
+        let (mut steady, flow_c, mut share) = match going_on_and_off {
+            Some(found) if found.2 < 1.0 => found,
+            _ => {
                 let steady = self.steady(cold, flow_c, wanted, moisture);
                 match steady.held {
                     Held::Between => (steady, flow_c, 1.0),
-                    Held::AtLeast => on_and_off.from(steady, cold, moisture),
+                    Held::AtLeast => on_and_off.from(steady.source_c, 1.0 - steady.loss.output),
                     Held::AtGreatest => {
                         flags.short = wanted_kw > steady.net_kw() * (1.0 + ENOUGH);
                         (steady, flow_c, (wanted_kw / steady.net_kw()).min(1.0))
                     }
                 }
-            };
+            }
+        };
         if steady.source_c < core.limits.lowest_source_c {
             let Some(held) = self.turned_down(cold, flow_c, moisture) else {
                 flags.stopped = true;
@@ -155,10 +172,11 @@ impl HeatPump {
     }
 }
 
-/// A machine that goes on and off because its least output at a flow temperature is more than is wanted. Its ways give the machine
-/// while running, its flow temperature then and the share of the time that it runs.
+/// A machine that goes on and off because its least output at a flow temperature is more than is wanted.
 struct OnAndOff<'a> {
     pump: &'a HeatPump,
+    cold: &'a ColdSide,
+    moisture: f64,
     spread_k: f64,
     wanted_kw: f64,
     /// Flow temperature that running all the time would need, °C.
@@ -167,42 +185,50 @@ struct OnAndOff<'a> {
 }
 
 impl OnAndOff<'_> {
-    /// Without frost and with a source that does not fall.
-    fn on_the_map(&self, cold: &ColdSide) -> (Steady, f64, f64) {
-        let running_c = self.running_c(cold.open_c, 1.0, self.flow_c);
-        let least = self.pump.steady(cold, running_c, Wanted::Least, 0.0);
-        (least, running_c, self.share(least.net_kw()))
-    }
-
-    /// From the machine at its least output at the flow temperature that running all the time would need.
-    fn from(&self, mut least: Steady, cold: &ColdSide, moisture: f64) -> (Steady, f64, f64) {
+    /// The machine while running, its flow temperature then and the share of the time that it runs, sought from a source temperature and
+    /// the share that frost leaves of the output.
+    ///
+    /// Source and frost hardly move with the flow: the map's output alone leads to the flow, then they follow.
+    fn from(&self, mut source_c: f64, mut left: f64) -> (Steady, f64, f64) {
         let mut running_c = self.flow_c;
-        for _ in 0..MOST_RISE_STEPS {
-            // Frost and the source's fall hardly move with the flow: first to where the map's output alone leads, then they.
-            let next_c = self.running_c(least.source_c, 1.0 - least.loss.output, running_c);
-            if (next_c - running_c).abs() < RISE_TOLERANCE_K {
+        let mut least;
+        let mut balance = Balance::new(self.pump, self.cold);
+        let mut steps = 0;
+        loop {
+            running_c = self.running_c(source_c, left, running_c);
+            least = self
+                .pump
+                .steady_at(source_c, running_c, Wanted::Least, self.moisture);
+            let next_c = balance.next(&least);
+            let next_left = 1.0 - least.loss.output;
+            steps += 1;
+            let settled = next_c.is_none() && (next_left - left).abs() < LEFT_TOLERANCE;
+            if settled || steps >= MOST_RISE_STEPS {
                 break;
             }
-            running_c = next_c;
-            least = self.pump.steady(cold, running_c, Wanted::Least, moisture);
+            source_c = next_c.unwrap_or(source_c);
+            left = next_left;
         }
         (least, running_c, self.share(least.net_kw()))
     }
 
-    /// Flow temperature while running with the source and the share of output that frost leaves as they are, °C, sought from a guess.
+    /// Flow temperature while running with the source and the share of output that frost leaves as they are, °C, sought from a guess by
+    /// Newton's steps.
     fn running_c(&self, source_c: f64, left: f64, guess_c: f64) -> f64 {
-        let mut secant = Secant::default();
         let mut running_c = guess_c;
         for _ in 0..MOST_RISE_STEPS {
-            let least_kw = self.pump.least_kw_at(source_c, running_c) * left;
-            let hotter_c = self.flow_c + running_rise_k(self.spread_k, self.share(least_kw));
-            let change_k = hotter_c.min(self.highest_c) - running_c;
-            if change_k.abs() < RISE_TOLERANCE_K {
+            let (least_kw, kw_per_k) = self.pump.least_at(source_c, running_c);
+            let share = self.share(least_kw * left);
+            let rise_k = running_rise_k(self.spread_k, share);
+            // Of a change of flow this share comes back as a change of the rise.
+            let feedback = -rise_per_share_k(self.spread_k, share) * share * kw_per_k / least_kw;
+            let step_k = (self.flow_c + rise_k - running_c) / (1.0 - feedback).max(LEAST_STIFFNESS);
+            let next_c = (running_c + step_k).min(self.highest_c).max(self.flow_c);
+            let change_k = next_c - running_c;
+            running_c = next_c;
+            if change_k.abs() < RISE_STEP_K {
                 break;
             }
-            running_c = secant
-                .next(running_c, change_k)
-                .clamp(self.flow_c, self.highest_c);
         }
         running_c
     }

@@ -31,14 +31,24 @@ pub struct Input {
     pub speed_share: f64,
 }
 
+/// Steps from least to greatest output.
+const FRACTION_STEPS: usize = 24;
+
+/// The machine at one source and one flow temperature.
+#[derive(Debug, Clone, PartialEq)]
+struct Node {
+    range: Range,
+    /// Inputs from least to greatest output, evenly spaced.
+    inputs: [Input; FRACTION_STEPS + 1],
+}
+
 /// Surfaces of one machine.
 #[derive(Debug, Clone)]
 pub struct Map {
     source: Axis,
     flow: Axis,
-    fraction: Axis,
-    ranges: Vec<Range>,
-    inputs: Vec<Input>,
+    /// By source temperature, and for each of these by flow temperature.
+    nodes: Vec<Node>,
 }
 
 /// Evenly spaced nodes, two at least.
@@ -71,58 +81,61 @@ impl Axis {
     /// The node below and the share of the way to the next; the ends hold beyond them, and NaN is at the low one.
     #[inline]
     fn place(&self, at: f64) -> (usize, f64) {
-        let steps = ((at - self.low) * self.per_step).max(0.0);
-        let below = steps.min(self.last) as i32;
-        (below as usize, (steps - f64::from(below)).min(1.0))
+        let (below, share) = cell((at - self.low) * self.per_step, self.last);
+        (below as usize, share)
     }
+}
+
+/// The cell, from 0 to `last`, that a number of steps falls into, and the share of it.
+#[inline]
+fn cell(steps: f64, last: f64) -> (u32, f64) {
+    // Spelt out, because `min` and `max` take care of NaN, which a look-up has no use for.
+    let held = if steps < last { steps } else { last };
+    let below = held as u32;
+    let share = steps - f64::from(below);
+    let share = if share > 0.0 { share } else { 0.0 };
+    (below, if share < 1.0 { share } else { 1.0 })
 }
 
 /// A place in a map: the four nodes about a condition and their weights. An hour asks several outputs at one place.
 pub(super) struct Spot<'a> {
-    map: &'a Map,
-    /// The cooler flow at the cooler and at the warmer source.
-    nodes: [usize; 2],
-    /// Weights of these and of the hotter flow beside each.
-    weights: [[f64; 2]; 2],
+    /// Cooler source with cooler and hotter flow, warmer source with the same.
+    nodes: [&'a Node; 4],
+    weights: [f64; 4],
     /// Greatest and least output, kW.
     pub range: Range,
+    /// Inverse of the step in flow temperature, 1/K.
+    per_flow_k: f64,
 }
 
 impl Spot<'_> {
     /// Input at a fraction of the way from least to greatest output.
     #[inline]
     pub fn input(&self, fraction: f64) -> Input {
-        let n = self.map.fraction.count;
-        let (k, x) = self.map.fraction.place(fraction);
-        let mut input = Input {
-            electric_per_heat: 0.0,
-            speed_share: 0.0,
-        };
-        for (node, weights) in self.nodes.into_iter().zip(self.weights) {
-            let cooler = node * n + k;
-            for (from, w) in [cooler, cooler + n].into_iter().zip(weights) {
-                // Always there: a place is within its axis.
-                if let Some([low, high]) = self.map.inputs.get(from..from + 2) {
-                    let between = |low: f64, high: f64| w * (low + x * (high - low));
-                    input.electric_per_heat +=
-                        between(low.electric_per_heat, high.electric_per_heat);
-                    input.speed_share += between(low.speed_share, high.speed_share);
-                }
-            }
+        let (k, x) = cell(
+            fraction * FRACTION_STEPS as f64,
+            (FRACTION_STEPS - 1) as f64,
+        );
+        let k = (k as usize).min(FRACTION_STEPS - 1);
+        let (mut electric_per_heat, mut speed_share) = (0.0, 0.0);
+        for (node, w) in self.nodes.iter().zip(self.weights) {
+            let (low, high) = (node.inputs[k], node.inputs[k + 1]);
+            let between = |low: f64, high: f64| w * (low + x * (high - low));
+            electric_per_heat += between(low.electric_per_heat, high.electric_per_heat);
+            speed_share += between(low.speed_share, high.speed_share);
         }
-        input
+        Input {
+            electric_per_heat,
+            speed_share,
+        }
     }
 
     /// How the least output changes with flow temperature at this source, kW/K.
     #[inline]
     pub fn least_kw_per_k(&self) -> f64 {
-        let mut change_kw = 0.0;
-        for (node, [w, v]) in self.nodes.into_iter().zip(self.weights) {
-            if let Some([cooler, hotter]) = self.map.ranges.get(node..node + 2) {
-                change_kw += (w + v) * (hotter.least_kw - cooler.least_kw);
-            }
-        }
-        change_kw * self.map.flow.per_step
+        let [a, b, c, d] = self.nodes.map(|node| node.range.least_kw);
+        let [wa, wb, wc, wd] = self.weights;
+        ((wa + wb) * (b - a) + (wc + wd) * (d - c)) * self.per_flow_k
     }
 }
 
@@ -132,25 +145,23 @@ impl Map {
     pub(super) fn spot(&self, source_c: f64, flow_c: f64) -> Spot<'_> {
         let (i, s) = self.source.place(source_c);
         let (j, f) = self.flow.place(flow_c);
-        let node = i * self.flow.count + j;
-        let nodes = [node, node + self.flow.count];
-        let weights = [1.0 - s, s].map(|w| [w * (1.0 - f), w * f]);
-        let mut range = Range {
-            greatest_kw: 0.0,
-            least_kw: 0.0,
-        };
-        for (node, [w, v]) in nodes.into_iter().zip(weights) {
-            // Always there: a place is within its axis.
-            if let Some([cooler, hotter]) = self.ranges.get(node..node + 2) {
-                range.greatest_kw += w * cooler.greatest_kw + v * hotter.greatest_kw;
-                range.least_kw += w * cooler.least_kw + v * hotter.least_kw;
-            }
+        let at = i * self.flow.count + j;
+        let next = at + self.flow.count;
+        let nodes = [at, at + 1, next, next + 1].map(|node| &self.nodes[node]);
+        let weights = [(1.0 - s) * (1.0 - f), (1.0 - s) * f, s * (1.0 - f), s * f];
+        let (mut greatest_kw, mut least_kw) = (0.0, 0.0);
+        for (node, w) in nodes.into_iter().zip(weights) {
+            greatest_kw += w * node.range.greatest_kw;
+            least_kw += w * node.range.least_kw;
         }
         Spot {
-            map: self,
             nodes,
             weights,
-            range,
+            range: Range {
+                greatest_kw,
+                least_kw,
+            },
+            per_flow_k: self.flow.per_step,
         }
     }
 
@@ -166,15 +177,14 @@ impl Map {
 
     /// Greatest output anywhere, kW.
     pub(super) fn greatest_output_kw(&self) -> f64 {
-        let outputs = self.ranges.iter().map(|range| range.greatest_kw);
+        let outputs = self.nodes.iter().map(|node| node.range.greatest_kw);
         outputs.fold(0.0, f64::max)
     }
 
     /// Whether the frost-free COP falls with flow and rises with source temperature at every fraction, over the limits.
     pub fn is_monotone(&self, limits: &Limits) -> bool {
-        let n = self.fraction.count;
         let value = |i: usize, j: usize, k: usize| {
-            self.inputs[(i * self.flow.count + j) * n + k].electric_per_heat
+            self.nodes[i * self.flow.count + j].inputs[k].electric_per_heat
         };
         let inside = |i: usize, j: usize| {
             let (source_c, flow_c) = (self.source.node(i), self.flow.node(j));
@@ -182,7 +192,7 @@ impl Map {
         };
         (0..self.source.count).all(|i| {
             (0..self.flow.count).filter(|&j| inside(i, j)).all(|j| {
-                (0..n).all(|k| {
+                (0..=FRACTION_STEPS).all(|k| {
                     let here = value(i, j, k);
                     let hotter =
                         j + 1 >= self.flow.count || !inside(i, j + 1) || value(i, j + 1, k) > here;

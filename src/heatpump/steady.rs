@@ -12,12 +12,14 @@ const FROST_TOLERANCE: f64 = 1e-6;
 const MOST_FROST_STEPS: usize = 12;
 /// Error of the source temperature at which the balance with the offer ends, K: 3e-7 of the electricity.
 const DRAW_TOLERANCE_K: f64 = 1e-5;
-/// Hastened substitutions of that balance before a bracket is sought; two or three are usual.
-const MOST_QUICK_STEPS: usize = 6;
-/// Of a kilowatt of heat about this comes from the source (COP 4): where the substitution begins, nothing else.
+/// Of a kilowatt of heat about this comes from the source (COP 4): where the search for that balance begins, nothing else.
 const USUAL_EXTRACTED_SHARE: f64 = 0.75;
-/// Most steps of that balance: the last half of them halve the bracket, which is enough from any bracket in use.
-const MOST_DRAW_STEPS: usize = 80;
+/// By about this share a machine at the same speed draws more from a source one kelvin warmer, and a machine at the same output takes
+/// less electricity (methods §2): the first step of that search, nothing else.
+const USUAL_GROWTH_PER_K: f64 = 0.027;
+/// Steps of that balance before every third of them halves the bracket, and the most steps: enough from any bracket in use.
+const MOST_QUICK_STEPS: usize = 6;
+const MOST_DRAW_STEPS: usize = 100;
 /// Halvings of the range of output when the machine is turned down: 1e-9 of it is left.
 const TURN_DOWN_HALVINGS: usize = 30;
 /// At what output the machine is asked to run.
@@ -79,10 +81,8 @@ impl HeatPump {
         }
     }
 
-    /// The machine in balance with what the source offers.
-    ///
-    /// Finds the entering temperature that is the open one less what the heat drawn there costs. The heat drawn is continuous
-    /// and bounded, so a bracket always exists; false position (Illinois) with bisection always ends.
+    /// The machine in balance with what the source offers: at the entering temperature that is the open one less what the heat drawn
+    /// there costs.
     pub(super) fn steady(
         &self,
         cold: &ColdSide,
@@ -90,72 +90,23 @@ impl HeatPump {
         wanted: Wanted,
         moisture: f64,
     ) -> Steady {
-        let at = |source_c: f64| self.steady_at(source_c, flow_c, wanted, moisture);
-        // An offer is made in kelvin per kilowatt of the real machine.
-        let k_per_kw = cold.k_per_kw * self.scale;
-        if k_per_kw == 0.0 {
-            return at(cold.open_c);
-        }
-        let excess =
-            |steady: &Steady| steady.source_c + k_per_kw * steady.extracted_kw - cold.open_c;
-        // What is drawn hardly changes over the fall: a substitution from near the end, hastened, almost always suffices.
-        let near_kw = match wanted {
-            Wanted::Net(net_kw) => USUAL_EXTRACTED_SHARE * net_kw,
-            Wanted::Least | Wanted::Greatest => 0.0,
-        };
-        let mut secant = Secant::default();
-        let mut source_c = cold.open_c - k_per_kw * near_kw;
-        for _ in 0..MOST_QUICK_STEPS {
-            let steady = at(source_c);
-            let off_k = -excess(&steady);
-            if off_k.abs() < DRAW_TOLERANCE_K {
-                return steady;
-            }
-            source_c = secant.next(source_c, off_k);
-        }
-        let open = at(cold.open_c);
-        let (mut high, mut high_excess) = (cold.open_c, excess(&open));
-        let mut width = high_excess.max(DRAW_TOLERANCE_K);
-        let mut low = high - width;
-        let mut steady = at(low);
-        let mut low_excess = excess(&steady);
-        for _ in 0..MOST_DRAW_STEPS {
-            if low_excess <= 0.0 {
-                break;
-            }
-            width *= 2.0;
-            low = high - width;
-            steady = at(low);
-            low_excess = excess(&steady);
-        }
-        // The end that stays twice is weighted down (Illinois), so that both ends move.
-        let mut stayed = 0;
-        for step in 0..MOST_DRAW_STEPS {
-            if excess(&steady).abs() < DRAW_TOLERANCE_K || high - low < DRAW_TOLERANCE_K {
-                break;
-            }
-            let middle = if step > MOST_DRAW_STEPS / 2 {
-                0.5 * (low + high)
-            } else {
-                (low * high_excess - high * low_excess) / (high_excess - low_excess)
+        let mut balance = Balance::new(self, cold);
+        let mut source_c = cold.open_c;
+        if balance.k_per_kw > 0.0 {
+            let near_kw = match wanted {
+                Wanted::Net(net_kw) => net_kw,
+                Wanted::Greatest => self.range_at(cold.open_c, flow_c).greatest_kw,
+                Wanted::Least => self.range_at(cold.open_c, flow_c).least_kw,
             };
-            steady = at(middle);
-            let found = excess(&steady);
-            if found > 0.0 {
-                (high, high_excess) = (middle, found);
-                if stayed == 1 {
-                    low_excess *= 0.5;
-                }
-                stayed = 1;
-            } else {
-                (low, low_excess) = (middle, found);
-                if stayed == -1 {
-                    high_excess *= 0.5;
-                }
-                stayed = -1;
+            source_c -= balance.k_per_kw * usual_draw_kw(near_kw);
+        }
+        loop {
+            let steady = self.steady_at(source_c, flow_c, wanted, moisture);
+            match balance.next(&steady) {
+                Some(next_c) => source_c = next_c,
+                None => return steady,
             }
         }
-        steady
     }
 
     /// The machine turned down until what it draws lets the source enter at its lowest; nothing where even its least output
@@ -190,10 +141,19 @@ impl HeatPump {
         (held.extracted_kw <= bearable_kw).then_some(held)
     }
 
-    /// Least output before frost, kW.
-    pub(super) fn least_kw_at(&self, source_c: f64, flow_c: f64) -> f64 {
+    /// Least output before frost (kW) and how it changes with flow temperature (kW/K).
+    #[inline]
+    pub(super) fn least_at(&self, source_c: f64, flow_c: f64) -> (f64, f64) {
+        let spot = self
+            .core
+            .map
+            .spot(source_c.min(flow_c - LEAST_DIFFERENCE_K), flow_c);
+        (self.allowed(spot.range).least_kw, spot.least_kw_per_k())
+    }
+
+    fn range_at(&self, source_c: f64, flow_c: f64) -> Range {
         let lookup_c = source_c.min(flow_c - LEAST_DIFFERENCE_K);
-        self.allowed(self.core.map.range(lookup_c, flow_c)).least_kw
+        self.allowed(self.core.map.range(lookup_c, flow_c))
     }
 
     /// A range of the map as far as the controller allows it.
@@ -207,7 +167,13 @@ impl HeatPump {
     }
 
     /// The machine at an entering source temperature, by the map.
-    fn steady_at(&self, source_c: f64, flow_c: f64, wanted: Wanted, moisture: f64) -> Steady {
+    pub(super) fn steady_at(
+        &self,
+        source_c: f64,
+        flow_c: f64,
+        wanted: Wanted,
+        moisture: f64,
+    ) -> Steady {
         let core = &*self.core;
         let machine = &core.machine.machine;
         let lookup_c = source_c.min(flow_c - LEAST_DIFFERENCE_K);
@@ -271,6 +237,91 @@ impl HeatPump {
             steady = at_output(next_kw.clamp(least_kw, greatest_kw), steady.held);
         }
         steady
+    }
+}
+
+/// Heat that a machine usually draws for an output, kW: where a search begins.
+pub(super) fn usual_draw_kw(heat_kw: f64) -> f64 {
+    USUAL_EXTRACTED_SHARE * heat_kw
+}
+
+/// The search for the entering temperature at which a source gives what is drawn from it.
+///
+/// Too cold and too warm a temperature enclose it as soon as both are known, because the heat drawn is continuous and bounded; secant steps
+/// lead to it, and halving ends what they do not.
+pub(super) struct Balance {
+    open_c: f64,
+    /// Fall for each kilowatt of the machine at its sheet's size, K/kW.
+    k_per_kw: f64,
+    too_cold_c: f64,
+    too_warm_c: f64,
+    /// The last temperature and by how much the source would be warmer, K.
+    last: Option<(f64, f64)>,
+    steps: usize,
+}
+
+impl Balance {
+    /// A search with an offer, which is made in kelvin per kilowatt of the real machine.
+    #[inline]
+    pub fn new(pump: &HeatPump, cold: &ColdSide) -> Self {
+        Self {
+            open_c: cold.open_c,
+            k_per_kw: cold.k_per_kw * pump.scale,
+            too_cold_c: f64::NEG_INFINITY,
+            too_warm_c: f64::INFINITY,
+            last: None,
+            steps: 0,
+        }
+    }
+
+    /// The entering temperature to try next, from the machine at the last one; nothing when it is in balance.
+    #[inline]
+    pub fn next(&mut self, steady: &Steady) -> Option<f64> {
+        if self.k_per_kw == 0.0 {
+            return None;
+        }
+        self.nearer(steady)
+    }
+
+    fn nearer(&mut self, steady: &Steady) -> Option<f64> {
+        let at_c = steady.source_c;
+        let off_k = self.open_c - self.k_per_kw * steady.extracted_kw - at_c;
+        if off_k.abs() < DRAW_TOLERANCE_K || self.steps >= MOST_DRAW_STEPS {
+            return None;
+        }
+        self.steps += 1;
+        if self.too_warm_c - self.too_cold_c < DRAW_TOLERANCE_K {
+            // What encloses nothing was found with another flow temperature.
+            (self.too_cold_c, self.too_warm_c) = (f64::NEG_INFINITY, f64::INFINITY);
+        }
+        if off_k > 0.0 {
+            self.too_cold_c = at_c;
+        } else {
+            self.too_warm_c = at_c;
+        }
+        let usual = || {
+            let growing_kw = match steady.held {
+                Held::Between => steady.electric_kw,
+                Held::AtLeast | Held::AtGreatest => steady.extracted_kw,
+            };
+            1.0 + self.k_per_kw * USUAL_GROWTH_PER_K * growing_kw
+        };
+        let slope = match self.last {
+            Some((before_c, off_before_k)) => (off_before_k - off_k) / (at_c - before_c),
+            None => usual(),
+        };
+        self.last = Some((at_c, off_k));
+        let by_secant_c = at_c + off_k / slope;
+        let middle_c = 0.5 * (self.too_cold_c + self.too_warm_c);
+        let halve = self.steps > MOST_QUICK_STEPS && self.steps.is_multiple_of(3);
+        let inside = self.too_cold_c < by_secant_c && by_secant_c < self.too_warm_c;
+        Some(if inside && !(halve && middle_c.is_finite()) {
+            by_secant_c
+        } else if middle_c.is_finite() {
+            middle_c
+        } else {
+            at_c + off_k
+        })
     }
 }
 
