@@ -3,11 +3,12 @@
 //! Limits, frost, cycling and the source's fall meet here, around look-ups in the map. Nothing is allocated and no power is
 //! raised; what is computed per hour is a handful of look-ups and, in damp cold, a few exponentials.
 
+use super::balance::{Balance, Next, usual_draw_kw};
 use super::duty::{ColdSide, Delivered, Duty, Flags};
 use super::frost::LEAST_LEFT;
 use super::heat_pump::HeatPump;
 use super::part_load::{rise_per_share_k, running_rise_k, start_up_loss_kw, starts_per_hour};
-use super::steady::{Balance, Held, Steady, Wanted, usual_draw_kw};
+use super::steady::{Held, Steady, Wanted};
 use crate::fault::{self, Fault};
 
 /// Change of the running flow temperature below which its search ends, K: what a Newton step that short leaves is less than 1e-4 K, 3e-6
@@ -191,25 +192,27 @@ impl OnAndOff<'_> {
     /// Source and frost hardly move with the flow: the map's output alone leads to the flow, then they follow.
     fn from(&self, mut source_c: f64, mut left: f64) -> (Steady, f64, f64) {
         let mut running_c = self.flow_c;
-        let mut least;
         let mut balance = Balance::new(self.pump, self.cold);
         let mut steps = 0;
         loop {
             running_c = self.running_c(source_c, left, running_c);
-            least = self
+            let least = self
                 .pump
                 .steady_at(source_c, running_c, Wanted::Least, self.moisture);
-            let next_c = balance.next(&least);
             let next_left = 1.0 - least.loss.output;
             steps += 1;
-            let settled = next_c.is_none() && (next_left - left).abs() < LEFT_TOLERANCE;
-            if settled || steps >= MOST_RISE_STEPS {
-                break;
+            match balance.next(&least, running_c) {
+                Next::At(next_c) if steps < MOST_RISE_STEPS => source_c = next_c,
+                Next::Found(least, running_c)
+                    if (next_left - left).abs() < LEFT_TOLERANCE || steps == MOST_RISE_STEPS =>
+                {
+                    return (least, running_c, self.share(least.net_kw()));
+                }
+                Next::At(_) => return (least, running_c, self.share(least.net_kw())),
+                Next::Found(..) => {}
             }
-            source_c = next_c.unwrap_or(source_c);
             left = next_left;
         }
-        (least, running_c, self.share(least.net_kw()))
     }
 
     /// Flow temperature while running with the source and the share of output that frost leaves as they are, °C, sought from a guess by

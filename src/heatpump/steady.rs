@@ -1,25 +1,16 @@
 //! The machine running steadily by its map, in balance with frost and with what the source offers.
 
+use super::balance::{Balance, Next, usual_draw_kw};
 use super::duty::ColdSide;
 use super::frost::{FrostLoss, humidity_ratio};
 use super::heat_pump::HeatPump;
 use super::limits::LEAST_DIFFERENCE_K;
-use super::map::Range;
+use super::map::{Range, Spot};
 use super::sheet::SourceKind;
 
 /// Change of output below which the frost substitution ends, relative, and the most substitutions; two or three are usual.
 const FROST_TOLERANCE: f64 = 1e-6;
 const MOST_FROST_STEPS: usize = 12;
-/// Error of the source temperature at which the balance with the offer ends, K: 3e-7 of the electricity.
-const DRAW_TOLERANCE_K: f64 = 1e-5;
-/// Of a kilowatt of heat about this comes from the source (COP 4): where the search for that balance begins, nothing else.
-const USUAL_EXTRACTED_SHARE: f64 = 0.75;
-/// By about this share a machine at the same speed draws more from a source one kelvin warmer, and a machine at the same output takes
-/// less electricity (methods §2): the first step of that search, nothing else.
-const USUAL_GROWTH_PER_K: f64 = 0.027;
-/// Steps of that balance before every third of them halves the bracket, and the most steps: enough from any bracket in use.
-const MOST_QUICK_STEPS: usize = 6;
-const MOST_DRAW_STEPS: usize = 100;
 /// Halvings of the range of output when the machine is turned down: 1e-9 of it is left.
 const TURN_DOWN_HALVINGS: usize = 30;
 /// At what output the machine is asked to run.
@@ -68,6 +59,21 @@ impl Steady {
     pub fn net_kw(&self) -> f64 {
         self.gross_kw * (1.0 - self.loss.output)
     }
+
+    /// What lies on the straight line from an earlier one through this one, `further` times as far beyond this as it is from there.
+    pub fn beyond(&self, earlier: &Self, further: f64) -> Self {
+        let on = |before: f64, now: f64| now + further * (now - before);
+        Self {
+            source_c: on(earlier.source_c, self.source_c),
+            gross_kw: on(earlier.gross_kw, self.gross_kw),
+            electric_kw: on(earlier.electric_kw, self.electric_kw),
+            source_side_kw: on(earlier.source_side_kw, self.source_side_kw),
+            extracted_kw: on(earlier.extracted_kw, self.extracted_kw),
+            speed_share: on(earlier.speed_share, self.speed_share),
+            loss: self.loss,
+            held: self.held,
+        }
+    }
 }
 
 impl HeatPump {
@@ -102,9 +108,9 @@ impl HeatPump {
         }
         loop {
             let steady = self.steady_at(source_c, flow_c, wanted, moisture);
-            match balance.next(&steady) {
-                Some(next_c) => source_c = next_c,
-                None => return steady,
+            match balance.next(&steady, flow_c) {
+                Next::At(next_c) => source_c = next_c,
+                Next::Found(steady, _) => return steady,
             }
         }
     }
@@ -174,154 +180,86 @@ impl HeatPump {
         wanted: Wanted,
         moisture: f64,
     ) -> Steady {
-        let core = &*self.core;
-        let machine = &core.machine.machine;
         let lookup_c = source_c.min(flow_c - LEAST_DIFFERENCE_K);
-        let spot = core.map.spot(lookup_c, flow_c);
-        let range = spot.range;
+        let spot = self.core.map.spot(lookup_c, flow_c);
         let Range {
             greatest_kw,
             least_kw,
-        } = self.allowed(range);
-        let width = range.greatest_kw - range.least_kw;
-        let at_output = |gross_kw: f64, held: Held| {
-            let fraction = if width > 0.0 {
-                (gross_kw - range.least_kw) / width
-            } else {
-                1.0
-            };
-            let input = spot.input(fraction);
-            let electric_kw = gross_kw * input.electric_per_heat;
-            let source_side_kw = machine.source_side_kw(input.speed_share);
-            let work_kw = (electric_kw - source_side_kw) * machine.compressor.drive_efficiency;
-            let extracted_kw = gross_kw - work_kw;
-            let loss = if moisture > 0.0 {
-                let evaporating_c = lookup_c - machine.evaporator.approach_k(extracted_kw);
-                core.frost.loss(source_c, evaporating_c, moisture)
-            } else {
-                FrostLoss::default()
-            };
-            Steady {
-                source_c,
-                gross_kw,
-                electric_kw,
-                source_side_kw,
-                extracted_kw,
-                speed_share: input.speed_share,
-                loss,
-                held,
-            }
-        };
-        let net_kw = match wanted {
-            Wanted::Greatest => return at_output(greatest_kw, Held::AtGreatest),
-            Wanted::Least => return at_output(least_kw, Held::AtLeast),
-            Wanted::Net(net_kw) => net_kw,
-        };
-        // Frost takes its share of a greater output: steps to the gross output that leaves what is wanted.
-        let mut steady = at_output(net_kw.clamp(least_kw, greatest_kw), Held::Between);
-        let mut secant = Secant::default();
-        for _ in 0..MOST_FROST_STEPS {
-            let gross_kw = net_kw / (1.0 - steady.loss.output);
-            steady.held = if gross_kw > greatest_kw {
-                Held::AtGreatest
+        } = self.allowed(spot.range);
+        let hold = |gross_kw: f64| {
+            if gross_kw > greatest_kw {
+                (greatest_kw, Held::AtGreatest)
             } else if gross_kw < least_kw {
-                Held::AtLeast
+                (least_kw, Held::AtLeast)
             } else {
-                Held::Between
-            };
-            let missing_kw = gross_kw.clamp(least_kw, greatest_kw) - steady.gross_kw;
-            if missing_kw.abs() < FROST_TOLERANCE * steady.gross_kw {
-                break;
+                (gross_kw, Held::Between)
             }
-            let next_kw = secant.next(steady.gross_kw, missing_kw);
-            steady = at_output(next_kw.clamp(least_kw, greatest_kw), steady.held);
-        }
-        steady
-    }
-}
-
-/// Heat that a machine usually draws for an output, kW: where a search begins.
-pub(super) fn usual_draw_kw(heat_kw: f64) -> f64 {
-    USUAL_EXTRACTED_SHARE * heat_kw
-}
-
-/// The search for the entering temperature at which a source gives what is drawn from it.
-///
-/// Too cold and too warm a temperature enclose it as soon as both are known, because the heat drawn is continuous and bounded; secant steps
-/// lead to it, and halving ends what they do not.
-pub(super) struct Balance {
-    open_c: f64,
-    /// Fall for each kilowatt of the machine at its sheet's size, K/kW.
-    k_per_kw: f64,
-    too_cold_c: f64,
-    too_warm_c: f64,
-    /// The last temperature and by how much the source would be warmer, K.
-    last: Option<(f64, f64)>,
-    steps: usize,
-}
-
-impl Balance {
-    /// A search with an offer, which is made in kelvin per kilowatt of the real machine.
-    #[inline]
-    pub fn new(pump: &HeatPump, cold: &ColdSide) -> Self {
-        Self {
-            open_c: cold.open_c,
-            k_per_kw: cold.k_per_kw * pump.scale,
-            too_cold_c: f64::NEG_INFINITY,
-            too_warm_c: f64::INFINITY,
-            last: None,
-            steps: 0,
-        }
-    }
-
-    /// The entering temperature to try next, from the machine at the last one; nothing when it is in balance.
-    #[inline]
-    pub fn next(&mut self, steady: &Steady) -> Option<f64> {
-        if self.k_per_kw == 0.0 {
-            return None;
-        }
-        self.nearer(steady)
-    }
-
-    fn nearer(&mut self, steady: &Steady) -> Option<f64> {
-        let at_c = steady.source_c;
-        let off_k = self.open_c - self.k_per_kw * steady.extracted_kw - at_c;
-        if off_k.abs() < DRAW_TOLERANCE_K || self.steps >= MOST_DRAW_STEPS {
-            return None;
-        }
-        self.steps += 1;
-        if self.too_warm_c - self.too_cold_c < DRAW_TOLERANCE_K {
-            // What encloses nothing was found with another flow temperature.
-            (self.too_cold_c, self.too_warm_c) = (f64::NEG_INFINITY, f64::INFINITY);
-        }
-        if off_k > 0.0 {
-            self.too_cold_c = at_c;
-        } else {
-            self.too_warm_c = at_c;
-        }
-        let usual = || {
-            let growing_kw = match steady.held {
-                Held::Between => steady.electric_kw,
-                Held::AtLeast | Held::AtGreatest => steady.extracted_kw,
+        };
+        let (mut gross_kw, mut held) = match wanted {
+            Wanted::Greatest => (greatest_kw, Held::AtGreatest),
+            Wanted::Least => (least_kw, Held::AtLeast),
+            Wanted::Net(net_kw) => hold(net_kw),
+        };
+        let mut secant = Secant::default();
+        let mut steps = 0;
+        loop {
+            let mut steady = self.at_output(&spot, source_c, lookup_c, gross_kw, moisture);
+            steady.held = held;
+            let Wanted::Net(net_kw) = wanted else {
+                return steady;
             };
-            1.0 + self.k_per_kw * USUAL_GROWTH_PER_K * growing_kw
-        };
-        let slope = match self.last {
-            Some((before_c, off_before_k)) => (off_before_k - off_k) / (at_c - before_c),
-            None => usual(),
-        };
-        self.last = Some((at_c, off_k));
-        let by_secant_c = at_c + off_k / slope;
-        let middle_c = 0.5 * (self.too_cold_c + self.too_warm_c);
-        let halve = self.steps > MOST_QUICK_STEPS && self.steps.is_multiple_of(3);
-        let inside = self.too_cold_c < by_secant_c && by_secant_c < self.too_warm_c;
-        Some(if inside && !(halve && middle_c.is_finite()) {
-            by_secant_c
-        } else if middle_c.is_finite() {
-            middle_c
+            // Frost takes its share of a greater output: steps to the gross output that leaves what is wanted.
+            let (needed_kw, now_held) = hold(net_kw / (1.0 - steady.loss.output));
+            steady.held = now_held;
+            let missing_kw = needed_kw - gross_kw;
+            if missing_kw.abs() < FROST_TOLERANCE * gross_kw || steps == MOST_FROST_STEPS {
+                return steady;
+            }
+            steps += 1;
+            held = now_held;
+            gross_kw = hold(secant.next(gross_kw, missing_kw)).0;
+        }
+    }
+
+    /// The machine at a gross output at a place in the map.
+    #[inline]
+    fn at_output(
+        &self,
+        spot: &Spot<'_>,
+        source_c: f64,
+        lookup_c: f64,
+        gross_kw: f64,
+        moisture: f64,
+    ) -> Steady {
+        let core = &*self.core;
+        let machine = &core.machine.machine;
+        let width = spot.range.greatest_kw - spot.range.least_kw;
+        let fraction = if width > 0.0 {
+            (gross_kw - spot.range.least_kw) / width
         } else {
-            at_c + off_k
-        })
+            1.0
+        };
+        let input = spot.input(fraction);
+        let electric_kw = gross_kw * input.electric_per_heat;
+        let source_side_kw = machine.source_side_kw(input.speed_share);
+        let work_kw = (electric_kw - source_side_kw) * machine.compressor.drive_efficiency;
+        let extracted_kw = gross_kw - work_kw;
+        let loss = if moisture > 0.0 {
+            let evaporating_c = lookup_c - machine.evaporator.approach_k(extracted_kw);
+            core.frost.loss(source_c, evaporating_c, moisture)
+        } else {
+            FrostLoss::default()
+        };
+        Steady {
+            source_c,
+            gross_kw,
+            electric_kw,
+            source_side_kw,
+            extracted_kw,
+            speed_share: input.speed_share,
+            loss,
+            held: Held::Between,
+        }
     }
 }
 
