@@ -1,6 +1,7 @@
 //! What goes up the flue: the combustion balance of a fuel, with condensation.
 
 use crate::air::{SEA_LEVEL_PA, tabulated_saturation_pressure_pa};
+use crate::extremes::lesser;
 
 /// Heat of condensation of water at 25 °C, kJ/mol (NIST).
 const LATENT_KJ_PER_MOL: f64 = 43.99;
@@ -57,7 +58,10 @@ impl Combustion {
         let saturation_pa = tabulated_saturation_pressure_pa(flue_c);
         // Outside the range of the saturation curve nothing condenses.
         let steam_mol = if saturation_pa < SEA_LEVEL_PA {
-            (dry_mol * saturation_pa / (SEA_LEVEL_PA - saturation_pa)).min(water_mol)
+            lesser(
+                dry_mol * saturation_pa / (SEA_LEVEL_PA - saturation_pa),
+                water_mol,
+            )
         } else {
             water_mol
         };

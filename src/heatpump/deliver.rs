@@ -3,12 +3,13 @@
 //! Limits, frost, cycling and the source's fall meet here, around look-ups in the map. Nothing is allocated and no power is
 //! raised; what is computed per hour is a handful of look-ups and, in damp cold, a few exponentials.
 
-use super::balance::{Balance, Next, usual_draw_kw};
+use super::balance::{Balance, Next};
 use super::duty::{ColdSide, Delivered, Duty, Flags};
 use super::frost::LEAST_LEFT;
 use super::heat_pump::HeatPump;
 use super::part_load::{rise_per_share_k, running_rise_k, start_up_loss_kw, starts_per_hour};
-use super::steady::{Held, Steady, Wanted};
+use super::steady::{Held, Place, Steady, Wanted};
+use crate::extremes::{greater, lesser};
 use crate::fault::{self, Fault};
 
 /// Change of the running flow temperature below which its search ends, K: what a Newton step that short leaves is less than 1e-4 K, 3e-6
@@ -47,7 +48,7 @@ impl HeatPump {
         if lifted <= 0.0 {
             return Delivered::standing(flags);
         }
-        let flow_c = duty.flow_c.min(highest_c);
+        let flow_c = lesser(duty.flow_c, highest_c);
         let wanted_kw = duty.heat_kw * lifted / self.scale;
         let moisture = self.moisture(cold);
 
@@ -65,26 +66,24 @@ impl HeatPump {
             flow_c,
             highest_c,
         };
+        let first = self.begin(cold, flow_c, wanted);
         // Far below the least output it goes on and off, whatever frost and the source's fall do.
-        let source_c = cold.open_c - cold.k_per_kw * self.scale * usual_draw_kw(wanted_kw);
         let frosty_left = if moisture > 0.0 { LEAST_LEFT } else { 1.0 };
-        let surely =
-            !duty.at_full_output && wanted_kw < self.least_at(source_c, flow_c).0 * frosty_left;
-        let going_on_and_off = if surely {
-            Some(on_and_off.from(source_c, 1.0))
-        } else {
-            None
-        };
+        let surely = !duty.at_full_output && wanted_kw < first.range.least_kw * frosty_left;
+        let going_on_and_off = surely.then(|| on_and_off.from(&first, 1.0));
         let (mut steady, flow_c, mut share) = match going_on_and_off {
             Some(found) if found.2 < 1.0 => found,
             _ => {
-                let steady = self.steady(cold, flow_c, wanted, moisture);
+                let steady = self.balanced(cold, first, flow_c, wanted, moisture);
                 match steady.held {
                     Held::Between => (steady, flow_c, 1.0),
-                    Held::AtLeast => on_and_off.from(steady.source_c, 1.0 - steady.loss.output),
+                    Held::AtLeast => {
+                        let place = self.place(steady.source_c, flow_c);
+                        on_and_off.from(&place, 1.0 - steady.loss.output)
+                    }
                     Held::AtGreatest => {
                         flags.short = wanted_kw > steady.net_kw() * (1.0 + ENOUGH);
-                        (steady, flow_c, (wanted_kw / steady.net_kw()).min(1.0))
+                        (steady, flow_c, lesser(wanted_kw / steady.net_kw(), 1.0))
                     }
                 }
             }
@@ -96,7 +95,7 @@ impl HeatPump {
             };
             flags.turned_down = true;
             flags.short = wanted_kw > held.net_kw() * (1.0 + ENOUGH);
-            share = (wanted_kw / held.net_kw()).min(1.0);
+            share = lesser(wanted_kw / held.net_kw(), 1.0);
             steady = held;
         }
         flags.cycling = share < 1.0 && !duty.at_full_output;
@@ -186,19 +185,18 @@ struct OnAndOff<'a> {
 }
 
 impl OnAndOff<'_> {
-    /// The machine while running, its flow temperature then and the share of the time that it runs, sought from a source temperature and
-    /// the share that frost leaves of the output.
+    /// The machine while running, its flow temperature then and the share of the time that it runs, sought from its place when running
+    /// all the time and the share that frost leaves of the output.
     ///
     /// Source and frost hardly move with the flow: the map's output alone leads to the flow, then they follow.
-    fn from(&self, mut source_c: f64, mut left: f64) -> (Steady, f64, f64) {
-        let mut running_c = self.flow_c;
+    fn from(&self, place: &Place<'_>, mut left: f64) -> (Steady, f64, f64) {
         let mut balance = Balance::new(self.pump, self.cold);
+        let mut source_c = place.source_c;
+        let mut running_c = self.stepped(place, left, self.flow_c).0;
         let mut steps = 0;
         loop {
-            running_c = self.running_c(source_c, left, running_c);
-            let least = self
-                .pump
-                .steady_at(source_c, running_c, Wanted::Least, self.moisture);
+            let place = self.settled(source_c, left, &mut running_c);
+            let least = self.pump.steady_at(&place, Wanted::Least, self.moisture);
             let next_left = 1.0 - least.loss.output;
             steps += 1;
             match balance.next(&least, running_c) {
@@ -215,30 +213,39 @@ impl OnAndOff<'_> {
         }
     }
 
-    /// Flow temperature while running with the source and the share of output that frost leaves as they are, °C, sought from a guess by
-    /// Newton's steps.
-    fn running_c(&self, source_c: f64, left: f64, guess_c: f64) -> f64 {
-        let mut running_c = guess_c;
+    /// The place at the flow temperature while running, with the source and the share of output that frost leaves as they are, sought
+    /// from a guess by Newton's steps.
+    #[inline]
+    fn settled(&self, source_c: f64, left: f64, running_c: &mut f64) -> Place<'_> {
+        let mut place = self.pump.place(source_c, *running_c);
         for _ in 0..MOST_RISE_STEPS {
-            let (least_kw, kw_per_k) = self.pump.least_at(source_c, running_c);
-            let share = self.share(least_kw * left);
-            let rise_k = running_rise_k(self.spread_k, share);
-            // Of a change of flow this share comes back as a change of the rise.
-            let feedback = -rise_per_share_k(self.spread_k, share) * share * kw_per_k / least_kw;
-            let step_k = (self.flow_c + rise_k - running_c) / (1.0 - feedback).max(LEAST_STIFFNESS);
-            let next_c = (running_c + step_k).min(self.highest_c).max(self.flow_c);
-            let change_k = next_c - running_c;
-            running_c = next_c;
-            if change_k.abs() < RISE_STEP_K {
+            let (next_c, enough) = self.stepped(&place, left, *running_c);
+            *running_c = next_c;
+            place = self.pump.place(source_c, next_c);
+            if enough {
                 break;
             }
         }
-        running_c
+        place
+    }
+
+    /// A Newton step from a place towards the flow temperature while running, and whether it was the last that is needed.
+    #[inline]
+    fn stepped(&self, place: &Place<'_>, left: f64, running_c: f64) -> (f64, bool) {
+        let least_kw = place.range.least_kw;
+        let share = self.share(least_kw * left);
+        let rise_k = running_rise_k(self.spread_k, share);
+        // Of a change of flow this share comes back as a change of the rise.
+        let feedback =
+            -rise_per_share_k(self.spread_k, share) * share * place.least_kw_per_k() / least_kw;
+        let step_k = (self.flow_c + rise_k - running_c) / greater(1.0 - feedback, LEAST_STIFFNESS);
+        let next_c = greater(lesser(running_c + step_k, self.highest_c), self.flow_c);
+        (next_c, (next_c - running_c).abs() < RISE_STEP_K)
     }
 
     /// Share of the time that it runs.
     fn share(&self, least_kw: f64) -> f64 {
-        (self.wanted_kw / least_kw).min(1.0)
+        lesser(self.wanted_kw / least_kw, 1.0)
     }
 }
 

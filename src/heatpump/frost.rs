@@ -6,6 +6,7 @@
 //! contain defrost, scales both losses.
 
 use crate::air::{MoistAir, SEA_LEVEL_PA, humidity_ratio_at_station, humidity_ratio_over_ice};
+use crate::extremes::lesser;
 
 /// Heat of sublimation of ice at 0 °C, kJ/kg (handbook value 2834).
 pub const SUBLIMATION_KJ_PER_KG: f64 = 2834.0;
@@ -105,7 +106,7 @@ impl Frost {
             outdoor_c - surface_c,
             humidity_ratio - surface_humidity_ratio,
         );
-        let cop = (self.strength * frosted_share * latent_share).min(GREATEST_LOSS);
+        let cop = lesser(self.strength * frosted_share * latent_share, GREATEST_LOSS);
         FrostSteps {
             surface_c,
             surface_humidity_ratio,

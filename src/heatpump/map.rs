@@ -15,6 +15,7 @@ pub use difference::{COLD_AIR_K, COLD_GROUND_K, HIGH_LIFT_K, SheetDoubts};
 pub use error::MapError;
 
 use super::limits::{LEAST_DIFFERENCE_K, Limits};
+use crate::extremes::{greater, lesser};
 
 /// Output range at a condition.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -92,12 +93,9 @@ impl Axis {
 /// The cell, from 0 to `last`, that a number of steps falls into, and the share of it.
 #[inline]
 fn cell(steps: f64, last: f64) -> (u32, f64) {
-    // Spelt out, because `min` and `max` take care of NaN, which a look-up has no use for.
-    let held = if steps < last { steps } else { last };
-    let below = held as u32;
-    let share = steps - f64::from(below);
-    let share = if share > 0.0 { share } else { 0.0 };
-    (below, if share < 1.0 { share } else { 1.0 })
+    let below = lesser(last, steps) as u32;
+    let share = greater(steps - f64::from(below), 0.0);
+    (below, lesser(share, 1.0))
 }
 
 /// A place in a map: the four nodes about a condition and their weights. An hour asks several outputs at one place.

@@ -7,6 +7,7 @@ use super::heat_pump::HeatPump;
 use super::limits::LEAST_DIFFERENCE_K;
 use super::map::{Range, Spot};
 use super::sheet::SourceKind;
+use crate::extremes::lesser;
 
 /// Change of output below which the frost substitution ends, relative, and the most substitutions; two or three are usual.
 const FROST_TOLERANCE: f64 = 1e-6;
@@ -20,6 +21,25 @@ pub(super) enum Wanted {
     Least,
     /// A net output, kW, held between the two.
     Net(f64),
+}
+
+/// Where a machine stands in the map.
+pub(super) struct Place<'a> {
+    /// Source temperature entering, °C.
+    pub source_c: f64,
+    /// The source temperature it is looked up at: a warmer source is as one at the least difference.
+    lookup_c: f64,
+    spot: Spot<'a>,
+    /// Output before frost, as far as the controller allows it.
+    pub range: Range,
+}
+
+impl Place<'_> {
+    /// How the least output changes with flow temperature, kW/K.
+    #[inline]
+    pub fn least_kw_per_k(&self) -> f64 {
+        self.spot.least_kw_per_k()
+    }
 }
 
 /// The machine running steadily by the map, at the sheet's own size.
@@ -96,20 +116,39 @@ impl HeatPump {
         wanted: Wanted,
         moisture: f64,
     ) -> Steady {
-        let mut balance = Balance::new(self, cold);
-        let mut source_c = cold.open_c;
-        if balance.k_per_kw > 0.0 {
-            let near_kw = match wanted {
-                Wanted::Net(net_kw) => net_kw,
-                Wanted::Greatest => self.range_at(cold.open_c, flow_c).greatest_kw,
-                Wanted::Least => self.range_at(cold.open_c, flow_c).least_kw,
-            };
-            source_c -= balance.k_per_kw * usual_draw_kw(near_kw);
+        let first = self.begin(cold, flow_c, wanted);
+        self.balanced(cold, first, flow_c, wanted, moisture)
+    }
+
+    /// Where to begin to look for the balance with what the source offers.
+    #[inline]
+    pub(super) fn begin(&self, cold: &ColdSide, flow_c: f64, wanted: Wanted) -> Place<'_> {
+        let k_per_kw = cold.k_per_kw * self.scale;
+        if k_per_kw == 0.0 {
+            return self.place(cold.open_c, flow_c);
         }
+        let near_kw = match wanted {
+            Wanted::Net(net_kw) => net_kw,
+            Wanted::Greatest => self.place(cold.open_c, flow_c).range.greatest_kw,
+            Wanted::Least => self.place(cold.open_c, flow_c).range.least_kw,
+        };
+        self.place(cold.open_c - k_per_kw * usual_draw_kw(near_kw), flow_c)
+    }
+
+    /// The machine in balance with what the source offers, looked for from a place on.
+    pub(super) fn balanced<'a>(
+        &'a self,
+        cold: &ColdSide,
+        mut place: Place<'a>,
+        flow_c: f64,
+        wanted: Wanted,
+        moisture: f64,
+    ) -> Steady {
+        let mut balance = Balance::new(self, cold);
         loop {
-            let steady = self.steady_at(source_c, flow_c, wanted, moisture);
+            let steady = self.steady_at(&place, wanted, moisture);
             match balance.next(&steady, flow_c) {
-                Next::At(next_c) => source_c = next_c,
+                Next::At(source_c) => place = self.place(source_c, flow_c),
                 Next::Found(steady, _) => return steady,
             }
         }
@@ -129,7 +168,8 @@ impl HeatPump {
             return None;
         }
         let bearable_kw = (cold.open_c - lowest_c) / k_per_kw;
-        let at = |wanted| self.steady_at(lowest_c, flow_c, wanted, moisture);
+        let place = self.place(lowest_c, flow_c);
+        let at = |wanted| self.steady_at(&place, wanted, moisture);
         let (least, greatest) = (at(Wanted::Least), at(Wanted::Greatest));
         if greatest.extracted_kw <= bearable_kw {
             return Some(greatest);
@@ -147,45 +187,31 @@ impl HeatPump {
         (held.extracted_kw <= bearable_kw).then_some(held)
     }
 
-    /// Least output before frost (kW) and how it changes with flow temperature (kW/K).
+    /// Where a machine stands in the map at an entering source and a flow temperature.
     #[inline]
-    pub(super) fn least_at(&self, source_c: f64, flow_c: f64) -> (f64, f64) {
-        let spot = self
-            .core
-            .map
-            .spot(source_c.min(flow_c - LEAST_DIFFERENCE_K), flow_c);
-        (self.allowed(spot.range).least_kw, spot.least_kw_per_k())
-    }
-
-    fn range_at(&self, source_c: f64, flow_c: f64) -> Range {
-        let lookup_c = source_c.min(flow_c - LEAST_DIFFERENCE_K);
-        self.allowed(self.core.map.range(lookup_c, flow_c))
-    }
-
-    /// A range of the map as far as the controller allows it.
-    fn allowed(&self, range: Range) -> Range {
-        let cap_kw = self.core.limits.greatest_output_kw;
-        let greatest_kw = cap_kw.map_or(range.greatest_kw, |cap| range.greatest_kw.min(cap));
-        Range {
-            greatest_kw,
-            least_kw: range.least_kw.min(greatest_kw),
+    pub(super) fn place(&self, source_c: f64, flow_c: f64) -> Place<'_> {
+        let core = &*self.core;
+        let lookup_c = lesser(source_c, flow_c - LEAST_DIFFERENCE_K);
+        let spot = core.map.spot(lookup_c, flow_c);
+        let mut range = spot.range;
+        if let Some(cap_kw) = core.limits.greatest_output_kw {
+            range.greatest_kw = lesser(range.greatest_kw, cap_kw);
+        }
+        range.least_kw = lesser(range.least_kw, range.greatest_kw);
+        Place {
+            source_c,
+            lookup_c,
+            spot,
+            range,
         }
     }
 
-    /// The machine at an entering source temperature, by the map.
-    pub(super) fn steady_at(
-        &self,
-        source_c: f64,
-        flow_c: f64,
-        wanted: Wanted,
-        moisture: f64,
-    ) -> Steady {
-        let lookup_c = source_c.min(flow_c - LEAST_DIFFERENCE_K);
-        let spot = self.core.map.spot(lookup_c, flow_c);
+    /// The machine at a place.
+    pub(super) fn steady_at(&self, place: &Place<'_>, wanted: Wanted, moisture: f64) -> Steady {
         let Range {
             greatest_kw,
             least_kw,
-        } = self.allowed(spot.range);
+        } = place.range;
         let hold = |gross_kw: f64| {
             if gross_kw > greatest_kw {
                 (greatest_kw, Held::AtGreatest)
@@ -203,7 +229,7 @@ impl HeatPump {
         let mut secant = Secant::default();
         let mut steps = 0;
         loop {
-            let mut steady = self.at_output(&spot, source_c, lookup_c, gross_kw, moisture);
+            let mut steady = self.at_output(place, gross_kw, moisture);
             steady.held = held;
             let Wanted::Net(net_kw) = wanted else {
                 return steady;
@@ -223,35 +249,29 @@ impl HeatPump {
 
     /// The machine at a gross output at a place in the map.
     #[inline]
-    fn at_output(
-        &self,
-        spot: &Spot<'_>,
-        source_c: f64,
-        lookup_c: f64,
-        gross_kw: f64,
-        moisture: f64,
-    ) -> Steady {
+    fn at_output(&self, place: &Place<'_>, gross_kw: f64, moisture: f64) -> Steady {
         let core = &*self.core;
         let machine = &core.machine.machine;
-        let width = spot.range.greatest_kw - spot.range.least_kw;
+        let whole = place.spot.range;
+        let width = whole.greatest_kw - whole.least_kw;
         let fraction = if width > 0.0 {
-            (gross_kw - spot.range.least_kw) / width
+            (gross_kw - whole.least_kw) / width
         } else {
             1.0
         };
-        let input = spot.input(fraction);
+        let input = place.spot.input(fraction);
         let electric_kw = gross_kw * input.electric_per_heat;
         let source_side_kw = machine.source_side_kw(input.speed_share);
         let work_kw = (electric_kw - source_side_kw) * machine.compressor.drive_efficiency;
         let extracted_kw = gross_kw - work_kw;
         let loss = if moisture > 0.0 {
-            let evaporating_c = lookup_c - machine.evaporator.approach_k(extracted_kw);
-            core.frost.loss(source_c, evaporating_c, moisture)
+            let evaporating_c = place.lookup_c - machine.evaporator.approach_k(extracted_kw);
+            core.frost.loss(place.source_c, evaporating_c, moisture)
         } else {
             FrostLoss::default()
         };
         Steady {
-            source_c,
+            source_c: place.source_c,
             gross_kw,
             electric_kw,
             source_side_kw,

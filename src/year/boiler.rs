@@ -2,6 +2,7 @@
 
 use super::rooms::Rooms;
 use super::row::{Flags, Row};
+use crate::extremes::lesser;
 use crate::heater::Boiler;
 use crate::home::{Home, StoreStep, WaterTemperatures};
 
@@ -17,7 +18,7 @@ pub(super) fn boiler_hour(
     rooms: &Rooms,
     row: &mut Row,
 ) {
-    row.heater_water_kwh = water.wanted_kwh.min(boiler.output_kw);
+    row.heater_water_kwh = lesser(water.wanted_kwh, boiler.output_kw);
     if row.heater_water_kwh > 0.0 {
         let has_store = home
             .hot_water
@@ -25,7 +26,7 @@ pub(super) fn boiler_hour(
             .is_some_and(|water| water.store.is_some());
         row.fuel_kwh = row.heater_water_kwh / boiler.water_efficiency(has_store);
     }
-    row.heater_space_kwh = rooms.wanted_kw.min(boiler.output_kw - row.heater_water_kwh);
+    row.heater_space_kwh = lesser(rooms.wanted_kw, boiler.output_kw - row.heater_water_kwh);
     if row.heater_space_kwh > 0.0 {
         let supply = home
             .emitters

@@ -4,6 +4,7 @@ use super::rooms::Rooms;
 use super::row::{Flags, Row};
 use super::step::{DutyKind, Probe};
 use super::system::{MachineSystem, State};
+use crate::extremes::{greater, lesser};
 use crate::fault::{self, Fault};
 use crate::heatpump::{ColdSide, Delivered, Duty, running_spread_k};
 use crate::home::{Control, Home, StoreStep};
@@ -83,7 +84,7 @@ pub(super) fn heat_pump_hour<P: Probe>(
     } else {
         idle.standby_kw + idle.crankcase_kw
     };
-    row.idle_kwh = at_rest_kw * (1.0 - row.running_hours).max(0.0);
+    row.idle_kwh = at_rest_kw * greater(1.0 - row.running_hours, 0.0);
 }
 
 /// The machine in balance with the emitters: where it cannot give what is asked, the flow is what the emitters need for the heat it
@@ -151,7 +152,7 @@ fn hot_water_block<P: Probe>(
         return 0.0;
     };
     let reachable_c = system.machine.limits().highest_flow_at(cold.open_c) - store.coil_k;
-    let end_c = water.machine_target_c.min(reachable_c);
+    let end_c = lesser(water.machine_target_c, reachable_c);
     let machine_kwh =
         ((end_c - water.before_c) * store.capacity_kwh_per_k).clamp(0.0, water.wanted_kwh);
     let mut used_hours = 0.0;
@@ -198,7 +199,7 @@ fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
         // Of two duties in the hour the colder: what the source had to bear.
         row.source_c = Some(
             row.source_c
-                .map_or(delivered.source_c, |c| c.min(delivered.source_c)),
+                .map_or(delivered.source_c, |c| lesser(c, delivered.source_c)),
         );
     }
     row.flags |= Flags::CYCLING.when(delivered.flags.cycling)

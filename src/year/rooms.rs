@@ -3,6 +3,7 @@
 use super::row::{Flags, Row};
 use super::site::Plan;
 use super::system::State;
+use crate::extremes::{greater, lesser};
 use crate::home::Home;
 
 /// What the rooms want in an hour.
@@ -40,11 +41,11 @@ impl Rooms {
             let under_way = &mut state.recovering;
             let warm_up_kw = recovery.heat_kw(hour, fabric, room_c, outdoor_c, gains_kw, under_way);
             row.flags |= Flags::RECOVERY.when(warm_up_kw > 0.0);
-            wanted_kw = wanted_kw.max(warm_up_kw);
+            wanted_kw = greater(wanted_kw, warm_up_kw);
         }
         row.space_wanted_kwh = wanted_kw;
         Self {
-            wanted_kw: wanted_kw.min(home.emitters.greatest_output_kw()),
+            wanted_kw: lesser(wanted_kw, home.emitters.greatest_output_kw()),
             least_kwh: reach(plan.backup_below_c[hour]),
             room_c,
             outdoor_c,

@@ -3,6 +3,7 @@
 use super::row::{Flags, Row};
 use super::site::Site;
 use super::system::State;
+use crate::extremes::greater;
 use crate::fault::{self, Fault};
 use crate::home::{Home, StoreStep, Tapped};
 
@@ -61,7 +62,7 @@ pub(super) fn store_hour(home: &Home, water: &StoreStep, state: &mut State, row:
         .and_then(|water| water.store.as_ref());
     let Some(store) = store else {
         // What is heated as it is drawn comes out as hot as the heater can make it.
-        let missing_kwh = (water.wanted_kwh - row.water_heat_kwh()).max(0.0);
+        let missing_kwh = greater(water.wanted_kwh - row.water_heat_kwh(), 0.0);
         if missing_kwh > 1e-9 {
             row.water_drawn_kwh -= missing_kwh;
             row.water_missing_kwh += missing_kwh;
