@@ -2,6 +2,7 @@
 
 use super::account::{bill_answers, meter_answers, shifting_answer, signal_gap};
 use super::bills::pair;
+use super::comfort::leaves_cold;
 use super::estimate::{
     Assumption, Estimate, GroundShown, HomeUsed, InputFile, MonthAnswer, SystemAnswer, WeatherUsed,
 };
@@ -18,7 +19,7 @@ use crate::source::Memory;
 use crate::study::{
     BalancePoint, Case, Contender, DesignPoint, Outcome, balance_point, design_point, under_pattern,
 };
-use crate::units::Fuel;
+use crate::units::{Fuel, as_set};
 use crate::year::Heating;
 
 /// What an estimate tells beside the figures of its case.
@@ -119,6 +120,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
             mean_c: site.outdoor_c.iter().sum::<f64>() / site.outdoor_c.len() as f64,
             min_c: site.outdoor_c.iter().copied().fold(f64::INFINITY, f64::min),
             repaired_hours: site.repaired.iter().filter(|&&repaired| repaired).count(),
+            part_year_days: None,
         },
         home: HomeUsed {
             label: told.home_label.clone(),
@@ -243,6 +245,7 @@ fn system(
         pattern_heat_kwh: None,
         pattern_cost: None,
         store: store(contender, &design),
+        leaves_cold: leaves_cold(contender, outcome),
         design: design_answer(&design),
         rooms: None,
         min_indoor_c: outcome
@@ -410,8 +413,9 @@ fn hygiene_cycles(case: &Case) -> Option<Finding> {
         .filter_map(|contender| {
             let cycle = contender.system.home.hot_water.as_ref()?.store?.hygiene?;
             Some(format!(
-                "\"{}\" to {:.0} °C",
-                contender.system.label, cycle.target_c
+                "\"{}\" to {} °C",
+                contender.system.label,
+                as_set(cycle.target_c)
             ))
         })
         .collect();

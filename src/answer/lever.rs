@@ -10,7 +10,7 @@ use super::estimate::LeverAnswer;
 use crate::problem::Problems;
 use crate::source::Source;
 use crate::study::{Account, BreakEven, Case, Crossing, Lever, Measure, Outcome, Pair, break_even};
-use crate::units::Currency;
+use crate::units::{Currency, as_set};
 
 /// Where each lever makes each choice equal today's system, by the label of the choice; all of them side by side.
 pub(super) fn break_evens(
@@ -232,9 +232,12 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
         Lever::FlowTemperature => {
             // Close to where it stands a whole kelvin would say nothing.
             let digits = usize::from((value - now).abs() < 2.0);
-            format!("a design flow of {value:.digits$} °C (now {now:.0} °C)")
+            format!(
+                "a design flow of {value:.digits$} °C (now {} °C)",
+                as_set(now)
+            )
         }
-        Lever::Indoor => format!("rooms at {value:.1} °C (now {now:.1} °C)"),
+        Lever::Indoor => format!("rooms at {value:.1} °C (now {} °C)", as_set(now)),
         Lever::HotWater => times("hot water", "more", "less", None),
         Lever::RatedOutput => format!("a machine of {value:.1} kW (now {now:.1} kW)"),
         Lever::FieldFactor => format!(

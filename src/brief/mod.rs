@@ -27,6 +27,7 @@ mod machine;
 mod notes;
 mod odds;
 mod own_fields;
+mod part_year;
 mod pattern;
 mod raw;
 mod read;

@@ -8,6 +8,7 @@ use minijinja::{AutoEscape, Environment, Error, ErrorKind, Output, State, Value}
 use super::facts::facts;
 use super::pictures::{Drawn, Material};
 use crate::locale::Locale;
+use crate::units::as_set;
 
 /// A section of the report.
 #[derive(Debug, Clone)]
@@ -132,6 +133,9 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
     environment.add_filter("n", move |value: Value, decimals: usize| {
         told(&value, &|v| marks.number(v, decimals))
     });
+    environment.add_filter("as_set", move |value: Value| {
+        told(&value, &|v| marks.localized(&as_set(v)))
+    });
     environment.add_filter("percent", move |value: Value, decimals: usize| {
         told(&value, &|v| {
             format!("{}\u{a0}%", marks.number(v * 100.0, decimals))
@@ -180,7 +184,7 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
                 "dec1" => Ok(marks.number(number, 1)),
                 "dec2" => Ok(marks.number(number, 2)),
                 "percent" => Ok(format!("{}\u{a0}%", marks.number(number * 100.0, 0))),
-                "c0" => Ok(format!("{}\u{a0}°C", marks.number(number, 0))),
+                "set" => Ok(marks.localized(&format!("{}\u{a0}°C", as_set(number)))),
                 _ => Err(Error::new(
                     ErrorKind::InvalidOperation,
                     format!("no way to show “{kind}”"),

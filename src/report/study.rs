@@ -33,6 +33,10 @@ fn choice_text(choice: &ChoiceStudy, currency: &str) -> String {
         "{}: {:.0} {currency} a year, {:+.0} against today",
         choice.label, choice.cost, choice.saving
     )];
+    if let Some(cold) = &choice.leaves_cold {
+        let line = format!("No, {cold}: cheaper is of no use here. More heat comes first.");
+        blocks.push(wrapped(&line, "", "  "));
+    }
     let answered = |measure: &'static str| {
         choice
             .break_even

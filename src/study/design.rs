@@ -32,11 +32,15 @@ impl DesignPoint {
         self.output_kw.min(self.emitters_kw)
     }
 
+    /// Heat that heater and backup carry together, kW.
+    pub fn carried_with_backup_kw(&self) -> f64 {
+        (self.output_kw + self.backup_kw.unwrap_or(0.0)).min(self.emitters_kw)
+    }
+
     /// Whether heater and backup together carry the load; a watt is rounding.
     pub fn covered(&self) -> bool {
         const ROUNDING_KW: f64 = 1e-3;
-        let with_backup = self.output_kw + self.backup_kw.unwrap_or(0.0);
-        with_backup.min(self.emitters_kw) >= self.load_kw - ROUNDING_KW
+        self.carried_with_backup_kw() >= self.load_kw - ROUNDING_KW
     }
 }
 

@@ -19,6 +19,7 @@ pub(super) fn system(material: &Material<'_>, i: usize) -> Value {
         facts.insert(name.to_owned(), value);
     };
     put("number", json!(i + 1));
+    put("mark", json!(mark(answer)));
     put("indoor_c", json!(contender.indoor_c));
     put(
         "emitters",
@@ -103,6 +104,12 @@ pub(super) fn system(material: &Material<'_>, i: usize) -> Value {
         put("levers", json!(levers));
     }
     Value::Object(facts)
+}
+
+/// What stands behind a name among others; nothing where rooms and water are kept warm.
+pub(super) fn mark(answer: &SystemAnswer) -> String {
+    let name = answer.name();
+    name.strip_prefix(&answer.label).unwrap_or("").to_owned()
 }
 
 /// The meters, by what they count, and what their bands are made of.

@@ -27,7 +27,7 @@ pub(super) fn annual_cost(material: &Material<'_>) -> Result<Drawn, ChartError> 
     let left_out = costs.len() - shown.len();
     let systems = shown.iter().map(|&i| &estimate.systems[i]);
     let systems = systems.map(|s| chart::SystemCost {
-        label: s.label.clone(),
+        label: s.name(),
         today: s.today,
         energy: s.cost_energy,
         standing: s.cost_standing,
@@ -64,7 +64,7 @@ fn cost_bars(material: &Material<'_>) -> Vec<Bar> {
         ];
         let today = if s.today { " (today)" } else { "" };
         Bar {
-            label: format!("{}{today}", chart::plain_line(&s.label)),
+            label: format!("{}{today}", chart::plain_line(&s.name())),
             parts: parts
                 .into_iter()
                 .filter_map(|(name, amount)| {
