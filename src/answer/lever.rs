@@ -270,7 +270,8 @@ fn rates(account: &Account, factor: f64) -> Option<String> {
     /// More bands than this nobody says aloud.
     const SAID: usize = 3;
     let tariff = &account.tariff;
-    let bands = &tariff.prices.last()?.bands;
+    let prices = tariff.prices.last()?;
+    let bands = &prices.bands;
     let factor = Decimal::from_f64(factor)?;
     let one = bands.len() == 1;
     let said: Option<Vec<String>> = bands
@@ -285,8 +286,13 @@ fn rates(account: &Account, factor: f64) -> Option<String> {
             })
         })
         .collect();
+    let tax = if prices.tax.energy_factor() > 1.0 {
+        " before tax"
+    } else {
+        ""
+    };
     said.filter(|said| !said.is_empty() && said.len() <= SAID)
-        .map(|said| said.join(", "))
+        .map(|said| said.join(", ") + tax)
 }
 
 #[cfg(test)]

@@ -266,13 +266,25 @@ fn study(pair: &Pair, wish: &Wish) -> Result<ChoiceStudy, Problems> {
                 low: swing.spread.low,
                 high: swing.spread.high,
                 low_words: condition(swing.lever, swing.now, swing.spread.low, pair),
-                high_words: condition(swing.lever, swing.now, swing.spread.high, pair),
+                high_words: condition(swing.lever, swing.now, swing.spread.high, pair)
+                    + at_its_limit(swing.lever, swing.now, swing.spread.high),
                 saving_at_low: swing.at_low,
                 saving_at_high: swing.at_high,
                 from: swing.spread.from.to_owned(),
             })
             .collect(),
     })
+}
+
+/// Why the upper end of a swing is where the lever stands: hotter water the machine does not make.
+fn at_its_limit(lever: Lever, now: f64, high: f64) -> &'static str {
+    /// Below this the two are written alike, K.
+    const ALIKE_K: f64 = 0.05;
+    if lever == Lever::FlowTemperature && (high - now).abs() < ALIKE_K {
+        ": the machine makes no hotter"
+    } else {
+        ""
+    }
 }
 
 fn spf(pair: &Pair) -> Option<SpfAnswer> {

@@ -9,6 +9,7 @@ mod clock_leaves;
 mod columns;
 mod defaults;
 mod demo;
+mod design_outdoor;
 mod emitter_findings;
 mod emitters;
 mod energy;

@@ -9,6 +9,7 @@ mod compressor;
 mod correction;
 pub mod cycle;
 mod deliver;
+mod discharge;
 mod duty;
 mod exact;
 mod exchanger;

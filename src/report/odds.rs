@@ -98,6 +98,7 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
         });
         blocks.push(lines.collect::<Vec<_>>().join("\n"));
     }
+    blocks.push(wrapped(&answer.not_drawn, "", "  "));
     blocks.push(wrapped(&marks.localized(&answer.find_out), "", "  "));
     let ranges = answer.uncertain.iter().map(|one| {
         let line = format!(

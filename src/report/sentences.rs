@@ -35,7 +35,7 @@ sections! {
     "change", "What would change it";
     "next", "What to find out next";
     "odds", "How sure it is";
-    "home", "The home, and what was assumed";
+    "home", "The home";
     "weather", "The weather, and how good it is";
     "systems", "Each system";
     "air-ground", "Air against ground";
@@ -49,6 +49,7 @@ sections! {
     "cautions", "Cautions";
     "limits", "Limits of the method";
     "findings", "Findings";
+    "assumed", "What was assumed";
     "glossary", "Words";
     "origin", "Where this is from";
 }

@@ -264,7 +264,8 @@ fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
     let cooling = systems.iter().filter(|system| system.each_year_its_own);
     let cooling: String = cooling.filter_map(own_years).collect();
     format!(
-        "{}\n{table}{cooling}",
-        wrapped(&format!("Over the years: {}", lifetime.terms), "", "  ")
+        "{}\n{table}{cooling}\n{}",
+        wrapped(&format!("Over the years: {}", lifetime.terms), "", "  "),
+        wrapped(&lifetime.todays_next, "", "  ")
     )
 }

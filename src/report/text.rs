@@ -91,6 +91,7 @@ fn odds_in_brief(odds: &OddsSummary) -> String {
         );
         lines.push(wrapped(said.trim_end(), "", "  "));
     }
+    lines.push(wrapped(&odds.not_drawn, "", "  "));
     lines.join("\n")
 }
 
@@ -231,6 +232,7 @@ const LINES: &[Line] = &[
     ("Design load carried", |s| {
         Some(format!("{:.0} %", 100.0 + s.design.margin_percent))
     }),
+    ("  limited by", |s| Some(s.design.limited_by.clone())),
     ("Coldest indoors", |s| {
         Some(format!("{:.1} °C", s.min_indoor_c))
     }),

@@ -1,7 +1,7 @@
 //! From whole blocks of samples to the odds.
 
 use super::matters::{find_out, matters};
-use super::words::in_words;
+use super::words::{in_words, not_drawn};
 use super::{Between, ChoiceOdds, OddsAnswer, QuantilesAnswer, UncertainAnswer};
 use crate::answer::comfort::leaves_cold;
 use crate::answer::lever::unit;
@@ -93,6 +93,7 @@ pub fn odds(
         choices,
         between,
         about: label(best),
+        not_drawn: not_drawn(sampler.draws_years()),
         find_out: find_out(&what_matters, wrong),
         what_matters,
         chance_wrong: wrong,

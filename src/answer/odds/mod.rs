@@ -40,6 +40,8 @@ pub struct OddsAnswer {
     pub chance_wrong: f64,
     /// What was taken as uncertain, as the choice that `about` names has it.
     pub uncertain: Vec<UncertainAnswer>,
+    /// What the samples do not draw, in words.
+    pub not_drawn: String,
     /// What to find out first, in words.
     pub find_out: String,
     /// What was odd and what was done about it.

@@ -5,7 +5,7 @@ use serde::Serialize;
 use super::QuantilesAnswer;
 use super::make::{Sampled, quantiles};
 use super::matters::most_important;
-use super::words::{chance_in_words, in_words, is_about_the_same};
+use super::words::{chance_in_words, in_words, is_about_the_same, not_drawn};
 use crate::answer::comfort::leaves_cold;
 use crate::study::odds::{Sample, Sampler};
 use crate::study::{Case, Outcome};
@@ -22,6 +22,8 @@ pub struct OddsSummary {
     pub blocks: usize,
     /// Seed they follow from.
     pub seed: u64,
+    /// What the samples do not draw, in words.
+    pub not_drawn: String,
     /// Every choice.
     pub choices: Vec<ChoiceSummary>,
 }
@@ -113,6 +115,7 @@ pub fn summary(
         samples: blocks.iter().map(Vec::len).sum(),
         blocks: blocks.len(),
         seed: sampler.seed(),
+        not_drawn: not_drawn(sampler.draws_years()),
         choices: choices?,
     })
 }

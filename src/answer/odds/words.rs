@@ -43,6 +43,17 @@ pub(super) fn in_words(
     )
 }
 
+/// What the samples do not draw, and so cannot widen the chances.
+pub(super) fn not_drawn(draws_years: bool) -> String {
+    if draws_years {
+        "Not drawn is the model's own error, so the chances look surer than they are.".to_owned()
+    } else {
+        "Not drawn are another winter, as the brief gives one year of weather, and the model's own error, so the chances look surer \
+         than they are."
+            .to_owned()
+    }
+}
+
 /// Whether a chance of being cheaper says that neither is.
 pub(super) fn is_about_the_same(chance: f64) -> bool {
     ABOUT_THE_SAME.contains(&chance)

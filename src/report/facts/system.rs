@@ -89,6 +89,11 @@ pub(super) fn system(material: &Material<'_>, i: usize) -> Value {
     );
     put("design_flow_c", json!(answer.design.heater_flow_c));
     put("design_output_kw", json!(answer.design.output_kw));
+    put("design_limited_by", json!(answer.design.limited_by));
+    put(
+        "design_carried",
+        json!(1.0 + answer.design.margin_percent / 100.0),
+    );
     put("water_l_per_min", json!(answer.design.water_l_per_min));
     if let Some(store) = &answer.store {
         put("usable_l", json!(store.usable_l));

@@ -141,8 +141,11 @@ pub(super) fn spend(material: &Material<'_>) -> Result<Option<Drawn>, ChartError
         systems: systems.collect(),
     };
     let picture = chart::cumulative_spend(&data, &marks)?;
-    let caption = "All that is spent so far, year after year: what is put in, energy, upkeep and what must be bought again. Where two lines \
-cross, one has caught up with the other.";
+    let caption = format!(
+        "All that is spent so far, year after year: what is put in, energy, upkeep and what must be bought again. Where two lines \
+cross, one has caught up with the other. {}",
+        lifetime.todays_next
+    );
     Ok(Some(drawn("spend", caption, picture)))
 }
 
