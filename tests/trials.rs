@@ -44,14 +44,14 @@ backup = \"3 kW\"
     outcomes[1].mean_sums()
 }
 
-/// Air source in the United Kingdom, Electrification of Heat: median of about 2.8 to 2.9 in a year at H4 (methods §3, read in a
+/// Air source in the United Kingdom, Electrification of Heat: median of about 2.8 to 2.9 in a year at H4 (read in a
 /// secondary source). Of its spread only that of the coldest day is known there: quartiles 2.20 and 2.70 about 2.44, which is −10 and
 /// +11 %. Taken for the year too, the middle half is 2.57 to 3.15.
 ///
-/// A home like those in it: an ordinary gas-heated house, heat loss in the middle of what is met for a semi-detached one (methods
-/// §14: 180 to 280 W/K), in the mild maritime sample (mean 10.0 °C). The trial changed some radiators and designed for flow
+/// A home like those in it: an ordinary gas-heated house, heat loss in the middle of what is met for a semi-detached one
+/// (180 to 280 W/K \[from memory\]), in the mild maritime sample (mean 10.0 °C). The trial changed some radiators and designed for flow
 /// temperatures about 50 °C \[from memory\], not 55 °C as the old radiators would want and not 45 °C as new ones. Hot water is the
-/// measured 4 kWh a day (methods §11), at 50 °C. Machines of 2020 to 2022 were split R32 as often as anything \[from memory\]: the
+/// measured 4 kWh a day (published field figure, secondary source), at 50 °C. Machines of 2020 to 2022 were split R32 as often as anything \[from memory\]: the
 /// R32 sheet, scaled by its typical machine to the design load.
 #[test]
 fn air_source_in_a_mild_maritime_trial() {
@@ -79,7 +79,7 @@ rated_output = \"7 kW\"";
     assert!((2.57..=3.15).contains(&spf_h4), "{spf_h4}");
 }
 
-/// Homes of Fraunhofer ISE 2020, existing buildings in use, boundary about H3 (methods §3): air source 3.1 with a range of 2.5 to 3.8
+/// Homes of Fraunhofer ISE 2020, existing buildings in use, boundary about H3: air source 3.1 with a range of 2.5 to 3.8
 /// \[range from memory\], ground source 4.1 (verified) with a range of 3.3 to 4.7 \[range from memory\]. Of 29 air and 12 ground source
 /// systems \[from memory\] a normal spread is the range over 4.06 and 3.26 (expected range of such samples, tables of control charts),
 /// so 0.32 and 0.43; the middle half is ±0.674 of that: 2.88 to 3.32 and 3.81 to 4.39.
