@@ -70,7 +70,8 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     let brief = match &args.brief {
         Some(path) => Brief::read(path)?,
         None => Brief::demonstration()?,
-    };
+    }
+    .of_a_year("")?;
     if let Some(folder) = &args.out {
         check_folder(folder, &[RESULT, SAMPLES], args.force)?;
     }

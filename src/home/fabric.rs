@@ -270,7 +270,7 @@ mod tests {
         )
     }
 
-    /// methods §16: at −4 °C, 212 W/K: 5.09 kW from 20 °C, 4.13 kW from 15.5 °C.
+    /// By hand: at −4 °C, 212 W/K: 5.09 kW from 20 °C, 4.13 kW from 15.5 °C.
     #[test]
     fn design_load_is_taken_from_the_set_point_not_the_base_temperature() {
         assert!((terrace().design_load_kw(20.0, -4.0) - 5.088).abs() < 1e-9);

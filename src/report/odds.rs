@@ -26,7 +26,10 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     let code = &answer.currency;
     let rows = answer.choices.iter().map(|choice| {
         vec![
-            choice.label.clone(),
+            match choice.leaves_cold {
+                Some(_) => format!("{} (too cold)", choice.label),
+                None => choice.label.clone(),
+            },
             whole(choice.saving.p10),
             whole(choice.saving.p50),
             whole(choice.saving.p90),
@@ -95,6 +98,7 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
         });
         blocks.push(lines.collect::<Vec<_>>().join("\n"));
     }
+    blocks.push(wrapped(&answer.not_drawn, "", "  "));
     blocks.push(wrapped(&marks.localized(&answer.find_out), "", "  "));
     let ranges = answer.uncertain.iter().map(|one| {
         let line = format!(

@@ -31,7 +31,8 @@ pub struct OddsAnswer {
     pub choices: Vec<ChoiceOdds>,
     /// Chances of choices against each other, in the same samples.
     pub between: Vec<Between>,
-    /// The choice with the greatest saving on the median, which what follows is about.
+    /// The choice with the greatest saving on the median, of those that keep rooms and water warm where one does; what follows is
+    /// about it.
     pub about: String,
     /// What makes the spread of its saving, the most first.
     pub what_matters: Vec<Matters>,
@@ -39,6 +40,8 @@ pub struct OddsAnswer {
     pub chance_wrong: f64,
     /// What was taken as uncertain, as the choice that `about` names has it.
     pub uncertain: Vec<UncertainAnswer>,
+    /// What the samples do not draw, in words.
+    pub not_drawn: String,
     /// What to find out first, in words.
     pub find_out: String,
     /// What was odd and what was done about it.
@@ -68,6 +71,9 @@ pub struct ChoiceOdds {
     /// Standard error of that chance; absent with a single block.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub chance_error: Option<f64>,
+    /// Why it is no fair answer however likely it is to be cheaper; absent where rooms and water are kept warm.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub leaves_cold: Option<String>,
     /// The same as a sentence.
     pub sentence: String,
 }

@@ -6,8 +6,13 @@ use crate::study::Lever;
 /// Chances between which neither side is to be called cheaper. A choice of ours: two chances in three either way.
 const ABOUT_THE_SAME: std::ops::RangeInclusive<f64> = 0.3..=0.7;
 
-/// The odds of a choice in a sentence.
-pub(super) fn in_words(label: &str, chance: f64, saving: QuantilesAnswer, code: &str) -> String {
+/// The odds of a choice in a sentence; what leaves rooms or water cold is told first.
+pub(super) fn in_words(
+    (label, cold): (&str, Option<&str>),
+    chance: f64,
+    saving: QuantilesAnswer,
+    code: &str,
+) -> String {
     // Tens: the sample says no more.
     let tens = |value: f64| (value / 10.0).round() * 10.0;
     let (low, high) = (tens(saving.p10), tens(saving.p90));
@@ -30,9 +35,24 @@ pub(super) fn in_words(label: &str, chance: f64, saving: QuantilesAnswer, code: 
     };
     let than = if same.is_empty() { " than today" } else { "" };
     format!(
-        "{label}: {same}{}{than}; {between} a year in eight cases of ten.",
+        "{label}: {}{same}{}{than}; {between} a year in eight cases of ten.",
+        cold.map_or_else(String::new, |cold| format!(
+            "no, {cold}; left as cold as that, "
+        )),
         chance_in_words(chance)
     )
+}
+
+/// What the samples do not draw, and so cannot widen the chances.
+pub(super) fn not_drawn(draws_years: bool) -> String {
+    if draws_years {
+        "Not drawn is what the model itself leaves out, so the chances look surer than they are."
+            .to_owned()
+    } else {
+        "Not drawn are another winter, as the brief gives one year of weather, and what the model itself leaves out, so the chances \
+         look surer than they are."
+            .to_owned()
+    }
 }
 
 /// Whether a chance of being cheaper says that neither is.
@@ -142,15 +162,15 @@ mod tests {
             "about an even chance of being cheaper"
         );
         assert_eq!(
-            in_words("Air source", 0.67, between(-68.0, 112.0), "GBP"),
+            in_words(("Air source", None), 0.67, between(-68.0, 112.0), "GBP"),
             "Air source: about the same as today; about 2 chances in 3 of being cheaper; between 70 GBP dearer and 110 GBP cheaper a year in eight cases of ten."
         );
         assert_eq!(
-            in_words("Ground", 0.99, between(191.0, 443.0), "GBP"),
+            in_words(("Ground", None), 0.99, between(191.0, 443.0), "GBP"),
             "Ground: a near certainty of being cheaper than today; between 190 and 440 GBP cheaper a year in eight cases of ten."
         );
         assert_eq!(
-            in_words("Direct", 0.01, between(-443.0, -191.0), "GBP"),
+            in_words(("Direct", None), 0.01, between(-443.0, -191.0), "GBP"),
             "Direct: hardly a chance of being cheaper than today; between 190 and 440 GBP dearer a year in eight cases of ten."
         );
     }
