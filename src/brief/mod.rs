@@ -25,6 +25,7 @@ mod lifetime;
 mod locale;
 mod machine;
 mod notes;
+mod own_home;
 mod odds;
 mod own_fields;
 mod pattern;
