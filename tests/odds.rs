@@ -61,10 +61,10 @@ fn shares_agree_with_another_program() {
         for row in rows.iter().filter(|row| &row[0] == name) {
             let share = found[row[1].parse::<usize>().unwrap()].share;
             let number = |column: usize| row[column].parse::<f64>().unwrap();
-            // 24 classes smooth steep sides a little, 8000 points have an error of about 0.01; SALib's own error is added for its column.
-            assert!((share - number(2)).abs() < 0.025, "{row:?} {share}");
+            // 8000 points have an error of about 0.007: three of those; SALib's own error is added for its column.
+            assert!((share - number(2)).abs() < 0.02, "{row:?} {share}");
             assert!(
-                (share - number(3)).abs() < 0.025 + number(4),
+                (share - number(3)).abs() < 0.02 + number(4),
                 "{row:?} {share}"
             );
             checked += 1;
@@ -247,7 +247,7 @@ fn an_interrupted_answer_is_of_whole_blocks() {
     let answer = json(&output);
     assert_eq!(answer["stopped"], "interrupted");
     let samples = answer["samples"].as_u64().unwrap();
-    assert!(samples >= 50 && samples.is_multiple_of(50) && samples < 1_000_000);
+    assert!(samples >= 20 && samples.is_multiple_of(20) && samples < 1_000_000);
 }
 
 /// Two years in a file, the second 3 K colder: each sample meets one of them, the same for every system, so that the year of the

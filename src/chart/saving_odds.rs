@@ -26,22 +26,19 @@ pub struct ChoiceSaving {
     pub label: String,
     /// Saving against today in every sample; below zero where the choice is dearer.
     pub saving: Vec<f64>,
-    /// Standard error of the chance of being cheaper, 0 to 1, where it is known.
-    pub chance_error: Option<f64>,
+    /// Chance of being cheaper as it is said, in percent ("48 ± 4", "more than 96"); nothing to have it counted in the samples.
+    pub chance: Option<String>,
 }
 
 impl ChoiceSaving {
-    /// Share of the samples in which it is cheaper.
-    fn chance(&self) -> f64 {
-        let cheaper = self.saving.iter().filter(|saving| **saving > 0.0).count();
-        cheaper as f64 / self.saving.len() as f64
-    }
-
     fn chance_text(&self) -> String {
-        let error = self.chance_error.map_or_else(String::new, |error| {
-            format!(" ± {:.0}", (error * 100.0).max(1.0))
-        });
-        format!("cheaper in {:.0}{error} of 100", self.chance() * 100.0)
+        match &self.chance {
+            Some(said) => format!("cheaper in {said} of 100"),
+            None => {
+                let cheaper = self.saving.iter().filter(|saving| **saving > 0.0).count();
+                format!("cheaper in {cheaper} of {}", self.saving.len())
+            }
+        }
     }
 }
 
@@ -182,9 +179,14 @@ mod tests {
         let choice = ChoiceSaving {
             label: "A".into(),
             saving: vec![-5.0, -0.1, 0.1, 4.0],
-            chance_error: Some(0.02),
+            chance: None,
         };
-        assert_eq!(choice.chance_text(), "cheaper in 50 ± 2 of 100");
+        assert_eq!(choice.chance_text(), "cheaper in 2 of 4");
+        let said = ChoiceSaving {
+            chance: Some("more than 96".into()),
+            ..choice.clone()
+        };
+        assert_eq!(said.chance_text(), "cheaper in more than 96 of 100");
         assert_eq!(
             heap(&choice.saving, 4.0),
             [(-2, 0.25), (-1, 0.25), (0, 0.25), (1, 0.25)]

@@ -9,8 +9,9 @@ use crate::brief::Brief;
 use crate::report::{Drawn, odds_pictures, odds_text, samples_csv, spread_picture};
 use crate::study::odds::{Sample, Sampler};
 
-/// Samples of a block: whole blocks are drawn, their scatter gives the sampling errors.
-const BLOCK: usize = 50;
+/// Samples of a block: whole blocks are drawn, their scatter gives the sampling errors. Many small blocks tell an error better than few
+/// large ones, and 20 slices are nearly as even as 50.
+const BLOCK: usize = 20;
 /// Names of the files that are written beside the pictures.
 const RESULT: &str = "odds.json";
 const SAMPLES: &str = "samples.csv";

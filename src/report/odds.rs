@@ -9,12 +9,6 @@ use crate::locale::Marks;
 /// The odds as text for a terminal of 80 columns or more, with the marks of a place.
 pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     let whole = |value: f64| marks.number(value, 0);
-    let error = |error: Option<f64>| {
-        // A whole percent: the error of an error is large.
-        error.map_or_else(String::new, |error| {
-            format!(" ± {}", whole((error * 100.0).max(1.0)))
-        })
-    };
     let mut blocks: Vec<String> = vec![
         answer
             .choices
@@ -34,11 +28,7 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
                 || "–".to_owned(),
                 |spf| format!("{}–{}", marks.number(spf.p10, 1), marks.number(spf.p90, 1)),
             ),
-            format!(
-                "{:.0}{}",
-                choice.chance_cheaper * 100.0,
-                error(choice.chance_error)
-            ),
+            choice.chance_said.clone(),
         ]
     });
     let header = [
@@ -84,12 +74,9 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     }
     if !answer.between.is_empty() {
         let lines = answer.between.iter().map(|pair| {
-            let error = error(pair.chance_error);
             let line = format!(
-                "\"{}\" is cheaper than \"{}\" in {:.0}{error} of 100",
-                pair.label,
-                pair.than,
-                pair.chance_cheaper * 100.0
+                "\"{}\" is cheaper than \"{}\" in {} of 100",
+                pair.label, pair.than, pair.chance_said
             );
             wrapped(&line, "", "  ")
         });

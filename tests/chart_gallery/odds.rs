@@ -7,7 +7,7 @@ use winterledger::chart::{
 };
 
 /// A heap about a middle, the same every time: the quantiles of a triangle.
-fn heap(label: &str, middle: f64, half: f64) -> ChoiceSaving {
+fn heap(label: &str, middle: f64, half: f64, chance: &str) -> ChoiceSaving {
     let of = |i: i32| {
         let share = (f64::from(i) + 0.5) / 400.0;
         if share < 0.5 {
@@ -19,7 +19,7 @@ fn heap(label: &str, middle: f64, half: f64) -> ChoiceSaving {
     ChoiceSaving {
         label: label.into(),
         saving: (0..400).map(of).collect(),
-        chance_error: Some(0.012),
+        chance: Some(chance.into()),
     }
 }
 
@@ -27,9 +27,14 @@ fn saving() -> SavingOdds {
     SavingOdds {
         currency: "GBP".into(),
         choices: vec![
-            heap("Air source, same radiators", 1.0, 270.0),
-            heap("Air source, larger radiators", 217.0, 250.0),
-            heap("Ground source, larger radiators", 316.0, 240.0),
+            heap("Air source, same radiators", 1.0, 270.0, "50 ± 2"),
+            heap("Air source, larger radiators", 217.0, 250.0, "98 ± 1"),
+            heap(
+                "Ground source, larger radiators",
+                316.0,
+                240.0,
+                "more than 99",
+            ),
         ],
     }
 }
@@ -43,15 +48,19 @@ fn saving_odds_realistic() {
 #[test]
 fn saving_odds_hostile() {
     let mut data = saving();
-    data.choices = NAMES.iter().map(|name| heap(name, -1e9, 1e3)).collect();
-    data.choices.push(heap(&long_name(), 1e9, 1e9));
+    data.choices = NAMES
+        .iter()
+        .map(|name| heap(name, -1e9, 1e3, "less than 1"))
+        .collect();
+    data.choices
+        .push(heap(&long_name(), 1e9, 1e9, "more than 99"));
     check(
         "saving_odds_hostile",
         &saving_odds(&data, &english()).expect("drawn"),
     );
     data.choices.truncate(1);
     data.choices[0].saving = vec![0.0];
-    data.choices[0].chance_error = None;
+    data.choices[0].chance = None;
     check(
         "saving_odds_one_sample",
         &saving_odds(&data, &english()).expect("drawn"),

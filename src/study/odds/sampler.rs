@@ -1,5 +1,7 @@
 //! All uncertain levers moved together, every system run, block by block.
 
+use std::ops::Range;
+
 use rayon::prelude::*;
 
 use super::hypercube::Hypercube;
@@ -118,6 +120,11 @@ impl Sampler {
         self.cube.seed
     }
 
+    /// Samples of a block.
+    pub fn points(&self) -> usize {
+        self.cube.points
+    }
+
     /// The value a sample gave a lever for a choice; nothing where it was not moved.
     pub fn value(&self, sample: &Sample, place: usize, choice: usize) -> Option<f64> {
         let range = self.doubts.levers.get(place)?.of_choice(choice)?;
@@ -129,12 +136,24 @@ impl Sampler {
     /// # Errors
     /// When a bill cannot be made.
     pub fn block(&self, block: usize) -> Result<Vec<Sample>, Problems> {
-        let points = self.cube.block(block);
+        Ok(self.blocks(block..block + 1)?.concat())
+    }
+
+    /// The same of several blocks, all their samples side by side.
+    ///
+    /// # Errors
+    /// When a bill cannot be made.
+    pub fn blocks(&self, blocks: Range<usize>) -> Result<Vec<Vec<Sample>>, Problems> {
+        let points: Vec<Vec<f64>> = blocks.flat_map(|block| self.cube.block(block)).collect();
         let drawn: Vec<Result<Sample, Problems>> = points
             .into_par_iter()
             .map(|shares| self.sample(shares))
             .collect();
-        drawn.into_iter().collect()
+        let drawn = drawn.into_iter().collect::<Result<Vec<_>, _>>()?;
+        Ok(drawn
+            .chunks(self.cube.points)
+            .map(<[Sample]>::to_vec)
+            .collect())
     }
 
     fn sample(&self, mut shares: Vec<f64>) -> Result<Sample, Problems> {
