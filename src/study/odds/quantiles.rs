@@ -159,7 +159,7 @@ mod tests {
     ///
     /// Held of 300 seeds, blocks of samples as in SIZES (chance 0.34, chance 0.1, P10, P50, P90):
     /// 290, 277, 265, 266, 265; 283, 278, 272, 274, 273; 288, 282, 277, 276, 269.
-    /// Jackknife over blocks, as before, held the quantiles 240 to 250 times of 300 with 80 samples and 250 to 268 with 400.
+    /// A jackknife over the blocks held the quantiles about 0.81 of the time with 80 samples and 0.87 with 400.
     #[test]
     fn errors_hold_over_repeated_seeds() {
         let normal = Range::Normal {

@@ -9,6 +9,7 @@ use super::past::Pasts;
 use super::range::correlated;
 use super::uncertain::{Doubts, Uncertain, possible};
 use crate::problem::{Place, Problem, Problems};
+use crate::study::ageing::Ageing;
 use crate::study::case::Case;
 use crate::study::lever::Lever;
 use crate::study::outcome::Outcome;
@@ -166,18 +167,14 @@ impl Sampler {
             shares[fuel] = correlated(shares[fuel], shares[electricity], correlation);
         }
         let mut case = self.case.clone();
-        for contender in 0..case.contenders.len() {
-            let moves: Vec<(Lever, f64)> = levers
-                .iter()
-                .zip(&shares)
-                .filter_map(|(one, &share)| {
-                    Some((one.lever, one.ranges.get(contender)?.as_ref()?.at(share)?))
-                })
-                .collect();
-            if !moves.is_empty() {
-                case.apply(contender, &moves)?;
-            }
+        let mut moves: Vec<(Lever, usize, f64)> = Vec::new();
+        for (one, &share) in levers.iter().zip(&shares) {
+            let ranges = one.ranges.iter().enumerate();
+            moves.extend(ranges.filter_map(|(contender, range)| {
+                Some((one.lever, contender, range.as_ref()?.at(share)?))
+            }));
         }
+        case.apply_each(&moves, Ageing::Settled)?;
         // Every system meets the same year of the weather.
         let years = case.site.years.len();
         let mut year = 0;
