@@ -79,7 +79,7 @@ pub fn cost_odds(data: &CostOdds, marks: &Marks) -> Result<Picture, ChartError> 
         );
         rows.label(&mut scene, i, &system.label, (&spread, small));
         let y = rows.line(i) + 20.0;
-        rows.from_to(&mut scene, (system.p10, system.p90), y, &SPREAD);
+        rows.extent(&mut scene, (system.p10, system.p90), y, &SPREAD);
         scene.disc((rows.at(system.p50), y), 7.0, INK);
         scene.disc((rows.at(system.p50), y), 4.0, WHITE);
     }

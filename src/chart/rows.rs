@@ -102,7 +102,7 @@ impl Rows {
     }
 
     /// A line from one value to another with a mark across at either end.
-    pub fn from_to(&self, scene: &mut Scene, (low, high): (f64, f64), y: f64, mark: &FromTo) {
+    pub fn extent(&self, scene: &mut Scene, (low, high): (f64, f64), y: f64, mark: &FromTo) {
         let (low, high) = (self.at(low), self.at(high));
         scene.line(&[(low, y), (high, y)], mark.colour, mark.width);
         for end in [low, high] {

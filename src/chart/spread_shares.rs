@@ -87,7 +87,7 @@ pub fn spread_shares(data: &SpreadShares, marks: &Marks) -> Result<Picture, Char
         scene.area(&corners, PERIWINKLE, 1.0);
         scene.outline(&corners, INK, 1.2);
         let limits = (unknown.low * 100.0, unknown.high * 100.0);
-        rows.from_to(&mut scene, limits, (first + last) / 2.0, &LIMITS);
+        rows.extent(&mut scene, limits, (first + last) / 2.0, &LIMITS);
     }
     let mut alt = format!(
         "{}: what makes its spread, the greatest share first.",

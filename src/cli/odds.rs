@@ -19,8 +19,9 @@ const SAMPLES: &str = "samples.csv";
 /// How sure the comparison is: chances, what matters most, what to find out next.
 ///
 /// Every quantity that is not known for certain is drawn from its range, all together, and every system is run for a year. The ranges
-/// are the usual ones, or those of the tables [odds] and [choice.odds] of the brief. Without a brief it runs the demonstration home
-/// that is built in. Ctrl-C finishes the block that was begun and answers with what is done; the exit status is then 130.
+/// are the usual ones, or those of the tables [odds] and [choice.odds] of the brief; among them is how far a machine's sheet may be off at a
+/// high lift, at part load and in the cold. Without a brief it runs the demonstration home
+/// that is built in. Ctrl-C finishes the blocks that were begun and answers with what is done; the exit status is then 130.
 #[derive(Debug, clap::Args)]
 #[command(after_help = "\
 Examples:

@@ -2,9 +2,13 @@
 
 use crate::common::*;
 use winterledger::chart::{
-    ChoiceSaving, CostOdds, CostSpread, SavingOdds, SpreadShares, UnknownShare, cost_odds,
-    saving_odds, spread_shares,
+    ChartError, ChoiceSaving, CostOdds, CostSpread, Picture, SavingOdds, SpreadShares,
+    UnknownShare, cost_odds, saving_odds, spread_shares,
 };
+
+fn seen(name: &str, picture: Result<Picture, ChartError>) {
+    check(name, &picture.expect("drawn"));
+}
 
 /// A heap about a middle, the same every time: the quantiles of a triangle.
 fn heap(label: &str, middle: f64, half: f64, chance: &str) -> ChoiceSaving {
@@ -41,8 +45,7 @@ fn saving() -> SavingOdds {
 
 #[test]
 fn saving_odds_realistic() {
-    let picture = saving_odds(&saving(), &english()).expect("drawn");
-    check("saving_odds_realistic", &picture);
+    seen("saving_odds_realistic", saving_odds(&saving(), &english()));
 }
 
 #[test]
@@ -54,17 +57,11 @@ fn saving_odds_hostile() {
         .collect();
     data.choices
         .push(heap(&long_name(), 1e9, 1e9, "more than 99"));
-    check(
-        "saving_odds_hostile",
-        &saving_odds(&data, &english()).expect("drawn"),
-    );
+    seen("saving_odds_hostile", saving_odds(&data, &english()));
     data.choices.truncate(1);
     data.choices[0].saving = vec![0.0];
     data.choices[0].chance = None;
-    check(
-        "saving_odds_one_sample",
-        &saving_odds(&data, &english()).expect("drawn"),
-    );
+    seen("saving_odds_one_sample", saving_odds(&data, &english()));
     data.choices[0].saving = vec![f64::NAN];
     assert!(saving_odds(&data, &english()).is_err());
 }
@@ -89,10 +86,7 @@ fn cost_odds_realistic() {
             spread("Ground source, larger radiators", 1030.0, 1170.0, 1340.0),
         ],
     };
-    check(
-        "cost_odds_realistic",
-        &cost_odds(&data, &english()).expect("drawn"),
-    );
+    seen("cost_odds_realistic", cost_odds(&data, &english()));
 }
 
 #[test]
@@ -105,10 +99,7 @@ fn cost_odds_hostile() {
             .collect(),
     };
     data.systems.push(spread(&long_name(), 5.0, 5.0, 5.0));
-    check(
-        "cost_odds_hostile",
-        &cost_odds(&data, &english()).expect("drawn"),
-    );
+    seen("cost_odds_hostile", cost_odds(&data, &english()));
     data.systems.clear();
     assert!(cost_odds(&data, &english()).is_err());
 }
@@ -134,10 +125,7 @@ fn spread_shares_realistic() {
             unknown("indoor temperature", 0.0, 0.0, 0.01),
         ],
     };
-    check(
-        "spread_shares_realistic",
-        &spread_shares(&data, &english()).expect("drawn"),
-    );
+    seen("spread_shares_realistic", spread_shares(&data, &english()));
 }
 
 #[test]
@@ -150,13 +138,7 @@ fn spread_shares_hostile() {
             .collect(),
     };
     data.unknowns.push(unknown(&long_name(), 0.0, 0.0, 0.0));
-    check(
-        "spread_shares_hostile",
-        &spread_shares(&data, &english()).expect("drawn"),
-    );
+    seen("spread_shares_hostile", spread_shares(&data, &english()));
     data.unknowns = vec![unknown("Nothing", 0.0, 0.0, 0.0)];
-    check(
-        "spread_shares_nothing",
-        &spread_shares(&data, &english()).expect("drawn"),
-    );
+    seen("spread_shares_nothing", spread_shares(&data, &english()));
 }
