@@ -2,9 +2,12 @@
 
 use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
-use crate::answer::odds::OddsAnswer;
+use crate::answer::odds::{Matters, OddsAnswer};
 use crate::answer::short;
 use crate::locale::Marks;
+
+/// Share of the spread from which a lever has a line of its own: below it rounds to 0 %.
+const SAID: f64 = 0.005;
 
 /// The odds as text for a terminal of 80 columns or more, with the marks of a place.
 pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
@@ -41,7 +44,11 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     ];
     blocks.push(plain_table_within(WIDTH, header, rows));
     if !answer.what_matters.is_empty() {
-        let lines = answer.what_matters.iter().map(|one| {
+        let (told, hardly): (Vec<&Matters>, Vec<&Matters>) = answer
+            .what_matters
+            .iter()
+            .partition(|one| one.share >= SAID);
+        let lines = told.iter().map(|one| {
             let turns = one.turns_with.as_ref().map_or_else(
                 || "does not turn the answer".to_owned(),
                 |with| format!("turns with {}", marks.localized(with)),
@@ -65,7 +72,12 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
             );
             wrapped(&line, "  ", "      ")
         });
-        let lines: Vec<_> = lines.collect();
+        let mut lines: Vec<_> = lines.collect();
+        if !hardly.is_empty() {
+            let names: Vec<&str> = hardly.iter().map(|one| one.lever.as_str()).collect();
+            let line = format!("hardly any of it: {}", names.join(", "));
+            lines.push(wrapped(&line, "  ", "      "));
+        }
         blocks.push(format!(
             "What makes the spread of \"{}\"\n{}",
             answer.about,
