@@ -381,7 +381,7 @@ fn life_findings(machine: &MachineSystem, life: &[LoopYear], label: &str) -> Vec
                 "{what} of \"{label}\" is below 0 °C in {} hours of year {}",
                 year.hours_wall_frozen, year.year
             ),
-            "freezing lifts soil and can crack grout; the heat that freezing gives is not counted",
+            format!("freezing lifts soil and can crack grout; the heat that freezing gives is not counted, so that the brine is shown too cold then, by at most {:.1} K", -year.lowest_wall_c),
         ));
     }
     findings
