@@ -149,8 +149,13 @@ fn recharge_in_summer_holds_the_cost_of_a_loop_over_its_life() {
     let (without, _, drift) = bore("");
     let (half, _, drift_of_half) = bore("recharge = \"4000 kWh\"\n");
     let (each, one, drift_of_full) = bore("recharge = \"8000 kWh\"\n");
-    println!("{without:.0} {drift:.4}; {half:.0} {drift_of_half:.4}; {each:.0} {one:.0} {drift_of_full:.4}");
-    assert!(drift > 0.03 && drift_of_half < 0.65 * drift, "{drift} {drift_of_half}");
+    println!(
+        "{without:.0} {drift:.4}; {half:.0} {drift_of_half:.4}; {each:.0} {one:.0} {drift_of_full:.4}"
+    );
+    assert!(
+        drift > 0.03 && drift_of_half < 0.65 * drift,
+        "{drift} {drift_of_half}"
+    );
     assert!(drift_of_full.abs() < 0.3 * drift, "{drift_of_full}");
     // Warmer brine is worth more than the pump that runs all summer costs.
     assert!(half < without, "{half} {without}");
@@ -215,7 +220,10 @@ fn scaling_a_history_stands_for_ageing_anew() {
             scaled.costs.total / aged.costs.total - 1.0,
         );
         println!("{lever:?} × {factor:.2}: {off:.4?}");
-        assert!(off.0.abs() < 0.02 && off.1.abs() < 0.1 && off.2.abs() < 0.003, "{lever:?} {off:?}");
+        assert!(
+            off.0.abs() < 0.02 && off.1.abs() < 0.1 && off.2.abs() < 0.003,
+            "{lever:?} {off:?}"
+        );
         // The check can fail: without any history the brine would be far off.
         assert!(coldest_c(&fresh) - coldest_c(&aged) > 0.4, "{lever:?}");
     }
