@@ -188,8 +188,8 @@ fn a_run_can_be_resumed() {
 }
 
 /// A changed system takes the history of the unchanged one, scaled to its own draw, instead of ageing its ground anew. With heat loss 20 %
-/// more or 15 % less (the usual doubt), or a loop three quarters or one and a third times as long, the year then differs from the honestly
-/// aged one by less than 0.02 of SPF, 0.1 K of brine and 0.3 % of cost.
+/// more or 15 % less (the usual doubt), the year then differs from the honestly aged one by less than 0.02 of SPF, 0.1 K of brine and 0.3 % of
+/// cost: measured 0.0009, 0.008 K and 0.02 %. A loop of another length has another past and is aged anew, so that it does not differ at all.
 #[test]
 fn scaling_a_history_stands_for_ageing_anew() {
     for (lever, factor) in [
@@ -207,7 +207,8 @@ fn scaling_a_history_stands_for_ageing_anew() {
         let now = lever.now(&case, place).unwrap();
         lever.apply(now * factor, &mut case, place).unwrap();
         let moved = case.contenders[place].clone();
-        assert!(moved.aged.unwrap().moved);
+        let aged_anew = lever == Lever::LoopLength;
+        assert_eq!(moved.aged.unwrap().moved, !aged_anew);
         let scaled = case.run_one(&moved, None).unwrap();
         let honest = case.aged(&moved, moved.shown_year).unwrap();
         let aged = case.run_from(&moved, honest.memory, None).unwrap();
@@ -224,6 +225,7 @@ fn scaling_a_history_stands_for_ageing_anew() {
             off.0.abs() < 0.02 && off.1.abs() < 0.1 && off.2.abs() < 0.003,
             "{lever:?} {off:?}"
         );
+        assert!(!aged_anew || off == (0.0, 0.0, 0.0), "{off:?}");
         // The check can fail: without any history the brine would be far off.
         assert!(coldest_c(&fresh) - coldest_c(&aged) > 0.4, "{lever:?}");
     }
