@@ -91,8 +91,8 @@ fn every_year_of_a_loop_has_its_own_cost() {
     assert!(air.len() == 4 && air.iter().all(|year| *year == air[0]));
 }
 
-/// Present cost of a loop over 25 years: each year its own, and as if all were like the one that is shown.
-fn present_costs(ground: &str) -> (f64, f64, f64) {
+/// The home of the ground brief with one ground source of 6 kW and the tables of its loop.
+fn case_with(ground: &str) -> Case {
     let brief = fs::read_to_string(root().join("briefs/ground.toml"))
         .unwrap()
         .replace("\"../", &format!("\"{}/", root().display()))
@@ -108,7 +108,12 @@ typical_machine = \"ground, R410A, variable speed\"\nrated_output = \"6 kW\"\nba
     let folder = tempfile::tempdir().unwrap();
     let path = folder.path().join("life.toml");
     fs::write(&path, format!("{head}{choice}")).unwrap();
-    let case = Brief::read(&path).unwrap().case;
+    Brief::read(&path).unwrap().case
+}
+
+/// Present cost of a loop over 25 years: each year its own, and as if all were like the one that is shown.
+fn present_costs(ground: &str) -> (f64, f64, f64) {
+    let case = case_with(ground);
     let outcomes = case.run().unwrap();
     let each = cash_flow(&case, 1, &outcomes[1]).unwrap();
     let mut alike = case.clone();
@@ -161,6 +166,32 @@ fn recharge_in_summer_holds_the_cost_of_a_loop_over_its_life() {
     assert!(half < without, "{half} {without}");
     // With hardly a drift, the one-year way and each year's own are nearly one.
     assert!((each / one - 1.0).abs() < 2e-3, "{each} {one}");
+}
+
+/// Two U-tubes of a brief share the flow: four pipes have the heat of two and a half of the friction or less, at the same bore.
+#[test]
+fn a_brief_can_have_two_u_tubes() {
+    let loop_with = |borehole: &str| {
+        let case = case_with(&format!(
+            "[choice.ground]\nsoil = \"sandstone\"\n[choice.pipe]\noutside = \"32 mm\"\nwall = \"2.9 mm\"\n{borehole}[[choice.bore]]\ndepth = \"100 m\"\n"
+        ));
+        let machine = case.contenders[1].remembering().unwrap();
+        let Source::Buried(buried) = &machine.source else {
+            panic!()
+        };
+        (buried.resistance_m_k_per_w(), buried.circuit)
+    };
+    let (one, single) = loop_with("");
+    let (two, double) = loop_with("[choice.borehole]\nu_tubes = 2\n");
+    // The flow is halved and may turn laminar, which costs part of what the second U-tube gains.
+    assert!(two < one, "{one} {two}");
+    assert!((double.in_pipe.velocity_m_per_s / single.in_pipe.velocity_m_per_s - 0.5).abs() < 1e-9);
+    assert!(double.pump_kw < 0.5 * single.pump_kw);
+    // With the resistance given, only the flow is shared.
+    let (given, shared) =
+        loop_with("[choice.borehole]\nu_tubes = 2\nresistance = \"0.08 m K/W\"\n");
+    assert_eq!(given, 0.08);
+    assert_eq!(shared, double);
 }
 
 /// Two parts of a year with the state carried over are the year, the ground's memory included.
