@@ -142,8 +142,8 @@ fn lifetime_cost_takes_each_years_own() {
     assert!((each / one - 1.0).abs() < 5e-4, "{each} {one}");
 }
 
-/// Heat put back in summer: what the same bore drifts in cost from its first year to its last shrinks by more than half, and a ground that
-/// gets back about what it gave does not drift at all.
+/// Heat put back in summer: what a short bore's electricity drifts from its first year to its last, 4.5 %, falls to 2.8 % with 4000 kWh and to 0.7 % with
+/// 8000 kWh, about what was taken (measured; held with room). The pump that runs all summer is paid for.
 #[test]
 fn recharge_in_summer_holds_the_cost_of_a_loop_over_its_life() {
     let bore = |recharge: &str| {
@@ -168,7 +168,7 @@ fn recharge_in_summer_holds_the_cost_of_a_loop_over_its_life() {
     assert!((each / one - 1.0).abs() < 2e-3, "{each} {one}");
 }
 
-/// Two U-tubes of a brief share the flow: four pipes have the heat of two and a half of the friction or less, at the same bore.
+/// Two U-tubes of a brief share the flow, so that water is half as fast in twice the pipes, and the resistance is lower.
 #[test]
 fn a_brief_can_have_two_u_tubes() {
     let loop_with = |borehole: &str| {
