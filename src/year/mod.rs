@@ -5,6 +5,7 @@
 //! each hour, and hands each [`Row`] to a [`Sink`]. A run can be stopped and resumed at any hour: two half years with
 //! the state carried over are the year.
 
+mod balance;
 mod hybrid;
 mod ledger;
 mod metered;
