@@ -153,7 +153,8 @@ impl Emitters {
     }
 
     /// Other emitters of the same kind for the same load, with another design flow temperature (°C) and the same spread as
-    /// far as the room (°C) allows; other groups and the greatest flow keep their distance.
+    /// far as the room (°C) allows; other groups and the greatest flow keep their distance, and a flow that is set, fixed or by a
+    /// line, keeps its share of the excess above the room.
     pub fn with_design_flow(&self, flow_c: f64, room_c: f64) -> Self {
         /// Return water stays at least this much above the room, K.
         const LEAST_EXCESS_K: f64 = 1.0;
@@ -178,7 +179,10 @@ impl Emitters {
             room_c,
             greatest_flow_c,
         )
-        .with_control(self.control)
+        .with_control(
+            self.control
+                .scaled(self.design_flow_c(), groups[0].flow_c, room_c),
+        )
         .with_header(self.header_k)
     }
 
