@@ -105,9 +105,9 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         }
         system.shifting = shifting_answer(case, contender)?;
         findings.extend(signal_gap(contender, outcome)?);
+        system.ground = ground_shown(case, contender, outcome)?;
         findings.extend(shortfalls(&system));
         findings.extend(water_beyond_reach(contender, outcome));
-        system.ground = ground_shown(case, contender, outcome)?;
         findings.extend(source_too_cold(&system));
         systems.push(system);
     }
@@ -260,6 +260,7 @@ fn system(
             .map(|year| year.peak_electric_kw)
             .fold(0.0, f64::max),
         hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
+        hours_stopped: is_machine.then(|| outcome.mean(|year| f64::from(year.hours_stopped))),
         hours_short: outcome.mean(|year| f64::from(year.hours_short)),
         hours_water_short: outcome.mean(|year| f64::from(year.hours_water_short)),
         pattern: contender.pattern.words(),
@@ -365,6 +366,19 @@ fn shortfalls(system: &SystemAnswer) -> Vec<Finding> {
             Severity::Warning,
             format!("\"{label}\" gives hot water that is too cool in {:.0} hours a year", system.hours_water_short),
             "a larger store, a higher set point, longer reheat windows or more output would be needed",
+        ));
+    }
+    let stopped = system
+        .hours_stopped
+        .filter(|&hours| hours >= 0.5 && system.ground.is_none());
+    if let Some(hours) = stopped {
+        found.push(Finding::new(
+            Severity::Caution,
+            format!(
+                "the machine of \"{label}\" stands in {hours:.0} hours a year because its source is outside its limits; backup and immersion heater use {:.0} kWh",
+                system.backup_kwh.unwrap_or(0.0)
+            ),
+            "a machine made for such weather, or backup for the whole load of those hours, would be needed",
         ));
     }
     if !system.design.covered {
