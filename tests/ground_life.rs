@@ -38,7 +38,7 @@ fn heat_balances_over_the_life() {
         let sums = &year.sums;
         let heat = sums.machine_space_kwh + sums.machine_water_kwh;
         let into_refrigerant = heat - sums.extracted_kwh;
-        // The drive loses less than a tenth (methods §13: efficiency 0.95 to 0.98) and start-ups a few per cent.
+        // The drive loses less than a tenth (drive efficiency 0.95 to 0.98 \[from memory\]) and start-ups a few per cent.
         let share = into_refrigerant / sums.compressor_kwh;
         assert!((0.88..1.0).contains(&share), "year {}: {share}", year.year);
         assert_eq!(sums.returned_kwh, 0.0);

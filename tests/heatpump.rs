@@ -1,4 +1,4 @@
-//! The heat pump as a whole: shipped sheets, physics that must hold everywhere, and the traps of methods §16.
+//! The heat pump as a whole: shipped sheets, physics that must hold everywhere, and the traps that give plausible wrong numbers.
 
 #![cfg(test)] // so that the lints know the helpers below for test code
 
@@ -117,7 +117,7 @@ fn a_sheet_with_one_point_gives_a_sane_machine() {
                 cop(&bench.deliver(&dry(source_c), &steady(5.0, flow_c)))
             };
             let (hot, cold) = (at(source_c, 55.0), at(source_c - 5.0, 35.0));
-            // Shares of the rated COP: generic regressions (methods §2) give 0.50–0.65 at 20 K more lift, 0.80–0.92 at 5 K.
+            // Shares of the rated COP: generic regressions (Staffell et al. 2012, Ruhnau et al. 2019) give 0.50–0.65 at 20 K more lift, 0.80–0.92 at 5 K.
             assert!(
                 (0.48..0.75).contains(&(hot / rated_cop)),
                 "{what} hot {hot}"

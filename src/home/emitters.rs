@@ -286,7 +286,7 @@ mod tests {
     use super::*;
     use proptest::prelude::*;
 
-    /// EN 442 factors against ΔT50 (methods §5, computed): 40 K 0.7482, 35 K 0.6290, 30 K 0.5148, 25 K 0.4061, 20 K 0.3039.
+    /// EN 442 factors against ΔT50, (ΔT/50)^1.3: 40 K 0.7482, 35 K 0.6290, 30 K 0.5148, 25 K 0.4061, 20 K 0.3039.
     #[test]
     fn radiator_factors_follow_en_442() {
         // No spread, so that flow = mean: a radiator of 1 kW at ΔT 50.
@@ -303,7 +303,7 @@ mod tests {
         }
     }
 
-    /// methods §16: +15 % loss moves a 50 °C flow to about 53.5 °C, −15 % to 46.4 °C, with the emitters unchanged (50/43 at design).
+    /// EN 442 by hand: +15 % loss moves a 50 °C flow to about 53.5 °C, −15 % to 46.4 °C, with the emitters unchanged (50/43 at design).
     #[test]
     fn more_heat_through_the_same_radiators_needs_hotter_water() {
         let radiators = Emitters::new(EmitterKind::Radiators, 5.0, 50.0, 43.0, 20.0, 80.0);

@@ -1,10 +1,11 @@
 //! An hour of a home that keeps a boiler beside its machine.
 
+use super::boiler::{account_boiler, boiler_hour};
+use super::machine::heat_pump_hour;
+use super::rooms::Rooms;
 use super::row::Row;
 use super::site::Plan;
-use super::step::{
-    Probe, Rooms, Unwatched, account_boiler, boiler_hour, charge_energy, heat_pump_hour,
-};
+use super::step::{Probe, Unwatched, charge_energy};
 use super::system::HybridSystem;
 use crate::heater::{Effort, Side};
 use crate::heatpump::ColdSide;

@@ -1,6 +1,6 @@
 """The year of three homes once more, in another language and with another property library.
 
-Made from the documentation: methods (EN 442, ISO 13790, Kusuda and Achenbach, the tapping profile M of Regulation (EU) No
+Made from the documentation and its sources (EN 442, ISO 13790, Kusuda and Achenbach, the tapping profile M of Regulation (EU) No
 811/2013, the frost, cycling and combustion formulas quoted in the doc comments), the conventions of DEVELOPERS.md, and the doc
 comments and constants of `src` as `cargo doc --document-private-items` shows them.
 

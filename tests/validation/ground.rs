@@ -126,7 +126,7 @@ fn life() -> Row {
     }
     Row::new(
         "Fall of the yearly mean wall from year 1 to 25 of a single bore, K for 10 W/m",
-        "methods §16",
+        "common practice, no source: about 1.5",
         1.5,
         means[0] - means[24],
         0.15,

@@ -37,7 +37,7 @@ pub fn rows() -> Vec<Row> {
         ),
         Row::new(
             "Net over gross calorific value of methane",
-            "CoolProp 8.0.0 and heats of formation (methods §6)",
+            "CoolProp 8.0.0 and heats of formation",
             0.901,
             NET_PER_GROSS_METHANE,
             0.0005,

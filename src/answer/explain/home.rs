@@ -3,6 +3,7 @@
 use super::{Lines, Part, n, sum};
 use crate::home::Home;
 use crate::study::{Case, Contender, Traced};
+use crate::units::as_set;
 use crate::year::Flags;
 
 pub(super) fn weather(case: &Case, traced: &Traced) -> Part {
@@ -137,9 +138,9 @@ pub(super) fn hot_water(home: &Home, month0: usize, traced: &Traced) -> Option<P
             row.water_heat_kwh(),
             "kWh",
             format!(
-                "a block at full output before the rooms, begun below {:.0} °C, up to {:.0} °C",
-                store.set_point_c - store.hysteresis_k,
-                store.set_point_c
+                "a block at full output before the rooms, begun below {} °C, up to {} °C",
+                as_set(store.set_point_c - store.hysteresis_k),
+                as_set(store.set_point_c)
             ),
         );
     }

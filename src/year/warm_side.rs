@@ -5,7 +5,8 @@
 //! at which they are helped, the emitters carry more, at a hotter flow and with a hotter return; the machine warms that return as
 //! far as it can, and the rest is lifted behind it.
 
-use super::step::{ROUNDING, Rooms};
+use super::machine::ROUNDING;
+use super::rooms::Rooms;
 use super::system::MachineSystem;
 use crate::heatpump::{ColdSide, Delivered, Duty};
 use crate::home::{Emitters, Supply, WaterTemperatures};
@@ -38,7 +39,7 @@ pub(super) struct Balanced {
 }
 
 /// A machine, its emitters and the hour's rooms.
-pub(super) struct Warmth<'a> {
+pub(super) struct WarmSide<'a> {
     pub system: &'a MachineSystem,
     pub emitters: &'a Emitters,
     pub cold: &'a ColdSide,
@@ -51,7 +52,7 @@ pub(super) struct Warmth<'a> {
     pub held_flow_c: Option<f64>,
 }
 
-impl Warmth<'_> {
+impl WarmSide<'_> {
     /// The hour's balance.
     pub fn balance(&self) -> Balanced {
         let alone = self.alone();
@@ -78,8 +79,7 @@ impl Warmth<'_> {
     /// The machine alone.
     fn alone(&self) -> Balanced {
         let highest_c = self.highest_c();
-        let ask = |heat_kw: f64| {
-            let warm = self.supply(heat_kw);
+        let reached = |heat_kw: f64, warm: Supply| {
             if warm.water.flow_c <= highest_c {
                 warm
             } else {
@@ -87,8 +87,9 @@ impl Warmth<'_> {
                     .supply_at(heat_kw, self.rooms.room_c, highest_c)
             }
         };
+        let ask = |heat_kw: f64| reached(heat_kw, self.supply(heat_kw));
         let first = self.supply(self.rooms.wanted_kw);
-        let mut warm = ask(self.rooms.wanted_kw);
+        let mut warm = reached(self.rooms.wanted_kw, first);
         let mut duty = self.duty(&warm);
         let mut delivered = self.system.machine.deliver(self.cold, &duty);
         for _ in 0..MOST_STEPS {
