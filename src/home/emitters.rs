@@ -191,6 +191,7 @@ impl Emitters {
     ///
     /// EN 442: output ∝ excess temperature ^ n with the arithmetic mean water temperature; the water flow stays as
     /// designed, so flow minus return is proportional to the heat. One power a group.
+    #[inline]
     pub fn at_load(&self, heat_kw: f64, room_c: f64) -> WaterTemperatures {
         let share = heat_kw / self.design_load_kw;
         let leading = self.groups[0].at_share(share, self.room_c, room_c);
@@ -230,6 +231,7 @@ impl Emitters {
     ///
     /// A flow hotter than needed is throttled by the room valves: the same mean water, a cooler return. A cooler flow carries
     /// less heat.
+    #[inline]
     pub fn supply(&self, heat_kw: f64, room_c: f64, outdoor_c: f64) -> Supply {
         let needed = self.at_load(heat_kw, room_c);
         let spread_k = needed.flow_c - needed.return_c;

@@ -16,6 +16,7 @@ const ROUNDING: f64 = 1e-9;
 const LEAST_RUN_H: f64 = 1e-6;
 
 /// Tells the source what was drawn, and charges its pump.
+#[inline]
 pub(super) fn ground_hour(hour: usize, system: &MachineSystem, state: &mut State, row: &mut Row) {
     let source = &system.source;
     source.drawn(hour, row.extracted_kwh, &mut state.ground);
@@ -89,6 +90,7 @@ pub(super) fn heat_pump_hour<P: Probe>(
 
 /// The machine in balance with the emitters: where it cannot give what is asked, the flow is what the emitters need for the heat it
 /// does give, which is more at the lower flow.
+#[inline]
 fn in_balance(
     system: &MachineSystem,
     cold: &ColdSide,
@@ -117,6 +119,7 @@ fn in_balance(
 }
 
 /// By how much the valves cool the return below that of the designed water flow, K.
+#[inline]
 fn throttled_k(home: &Home, rooms: &Rooms, heat_kw: f64) -> f64 {
     match home.emitters.control() {
         Control::FollowingLoad => 0.0,
@@ -129,6 +132,7 @@ fn throttled_k(home: &Home, rooms: &Rooms, heat_kw: f64) -> f64 {
 
 /// Flow minus return while the machine runs: the design water flow carries the heat of the running time, held to what pump and
 /// machine allow.
+#[inline]
 fn delivered_spread_k(duty: &Duty, delivered: &Delivered) -> f64 {
     let asked_kwh = duty.heat_kw * duty.hours;
     if asked_kwh > 0.0 && delivered.running_hours > 0.0 {
@@ -187,6 +191,7 @@ fn hot_water_block<P: Probe>(
 }
 
 /// Puts a duty's electricity into its components; gives their sum.
+#[inline]
 fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
     row.compressor_kwh += delivered.compressor_kwh;
     row.source_side_kwh += delivered.source_side_kwh;
