@@ -44,6 +44,17 @@ pub struct Estimate {
     pub inputs: Vec<InputFile>,
 }
 
+impl Estimate {
+    /// The same estimate of less than a year: what would be said of a year is left out.
+    pub fn of_days(mut self, days: usize) -> Self {
+        self.weather.part_year_days = Some(days);
+        self.break_even.clear();
+        self.lifetime = None;
+        self.odds = None;
+        self
+    }
+}
+
 /// A file that was read.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize)]
 pub struct InputFile {
@@ -70,6 +81,9 @@ pub struct WeatherUsed {
     pub min_c: f64,
     /// Hours that were repaired.
     pub repaired_hours: usize,
+    /// Days run, where they are less than a year: then every figure is of these days and nothing is said of a year.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub part_year_days: Option<usize>,
 }
 
 /// The home an estimate was run for, as it is today.
@@ -169,6 +183,9 @@ pub struct SystemAnswer {
     pub hours_backup: f64,
     /// Hours that ended more than 1 K below the set point.
     pub hours_short: f64,
+    /// Hours a year in which the machine stood because its source was outside its limits.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub hours_stopped: Option<f64>,
     /// Hours in which hot water came out too cool.
     pub hours_water_short: f64,
     /// Lowest indoor temperature of all years.
@@ -181,6 +198,10 @@ pub struct SystemAnswer {
     /// Cost above that of the same system under today's pattern; absent when the pattern is today's.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub pattern_cost: Option<f64>,
+    /// Why it is no fair answer however cheap it is: rooms, design day or hot water that it leaves cold, in words; absent where all
+    /// are kept warm. Above stated bounds only; findings tell every hour.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub leaves_cold: Option<String>,
     /// The design point.
     pub design: DesignAnswer,
     /// The room table's verdict, where there is one.

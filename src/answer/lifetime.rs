@@ -14,6 +14,8 @@ pub struct LifetimeAnswer {
     pub discount_rate: f64,
     /// How prices and carbon go on, in words.
     pub terms: String,
+    /// Whether and when today's system is bought anew within these years, in words: what the choices avoid.
+    pub todays_next: String,
     /// Today's system first, then every choice whose capital is known.
     pub systems: Vec<SystemLifetime>,
 }
@@ -119,8 +121,28 @@ pub(super) fn lifetime(case: &Case, outcomes: &[Outcome]) -> Option<LifetimeAnsw
         years: case.terms.years,
         discount_rate: case.terms.discount_rate,
         terms: terms_in_words(case),
+        todays_next: todays_next(case),
         systems,
     })
+}
+
+/// What the comparison holds of the day when today's system is worn out.
+fn todays_next(case: &Case) -> String {
+    let years = case.terms.years;
+    let today = case.contenders.first();
+    let parts = today.and_then(|today| today.outlay.as_ref());
+    let parts = parts.map_or(&[][..], |outlay| outlay.parts.as_slice());
+    let first = (0..years).find(|&year| parts.iter().any(|part| part.is_bought(year, years)));
+    match (parts, first) {
+        ([], _) => "What today's system costs to replace is not in this: the next one comes for nothing here, so payback and spending \
+                    speak against the choices. Give capital under [today] and due_in under [today.outlay]."
+            .to_owned(),
+        (_, Some(0)) => "Today's system is bought anew at once, and its cost over the years holds that.".to_owned(),
+        (_, Some(year)) => format!(
+            "Today's system must be bought anew too when it is worn out, first in year {year}; its cost over the years holds that."
+        ),
+        (_, None) => format!("Today's system lasts longer than the {years} years, so nothing for a new one is in its cost."),
+    }
 }
 
 fn system(

@@ -2,6 +2,7 @@
 
 mod account;
 pub mod bills;
+mod comfort;
 mod compose;
 pub mod cycle;
 mod estimate;

@@ -2,6 +2,7 @@
 
 use serde::Serialize;
 
+use super::comfort::leaves_cold;
 use super::compose::Told;
 use super::estimate::{Assumption, LeverAnswer};
 use super::lever::{condition, lever_answer, price_unit, unit};
@@ -37,6 +38,9 @@ pub struct ChoiceStudy {
     pub cost: f64,
     /// Today's yearly cost less it.
     pub saving: f64,
+    /// Why it is no fair answer however cheap it is; absent where rooms and water are kept warm.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub leaves_cold: Option<String>,
     /// Where each lever makes it equal today's system, by yearly cost, lifetime cost and carbon.
     pub break_even: Vec<LeverAnswer>,
     /// The SPF at which the bills are equal; absent unless a heat pump stands against a boiler.
@@ -237,6 +241,7 @@ fn study(pair: &Pair, wish: &Wish) -> Result<ChoiceStudy, Problems> {
         label: pair.choice().system.label.clone(),
         cost: choice.costs.total,
         saving: today.costs.total - choice.costs.total,
+        leaves_cold: leaves_cold(pair.choice(), choice),
         break_even: levers,
         break_even_spf: spf(pair),
         emitters: (!emitters.is_empty()).then(|| {
@@ -261,13 +266,25 @@ fn study(pair: &Pair, wish: &Wish) -> Result<ChoiceStudy, Problems> {
                 low: swing.spread.low,
                 high: swing.spread.high,
                 low_words: condition(swing.lever, swing.now, swing.spread.low, pair),
-                high_words: condition(swing.lever, swing.now, swing.spread.high, pair),
+                high_words: condition(swing.lever, swing.now, swing.spread.high, pair)
+                    + at_its_limit(swing.lever, swing.now, swing.spread.high),
                 saving_at_low: swing.at_low,
                 saving_at_high: swing.at_high,
                 from: swing.spread.from.to_owned(),
             })
             .collect(),
     })
+}
+
+/// Why the upper end of a swing is where the lever stands: hotter water the machine does not make.
+fn at_its_limit(lever: Lever, now: f64, high: f64) -> &'static str {
+    /// Below this the two are written alike, K.
+    const ALIKE_K: f64 = 0.05;
+    if lever == Lever::FlowTemperature && (high - now).abs() < ALIKE_K {
+        ": the machine makes no hotter"
+    } else {
+        ""
+    }
 }
 
 fn spf(pair: &Pair) -> Option<SpfAnswer> {

@@ -8,6 +8,8 @@ use chrono_tz::Tz;
 use schemars::Schema;
 
 use super::bills::{BillsMade, Over, named, of_file};
+use super::carbon::of_another_country;
+use super::design_outdoor::design_beside_weather;
 use super::energy::{Energy, energy};
 use super::files::Folder;
 use super::home::WeatherFacts;
@@ -117,14 +119,10 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     let label = raw.home.as_ref().and_then(|home| check.value(&home.label));
     let zone = time_zone(raw.home.as_ref(), check, &mut notes);
     let mut weather = weather(raw.weather.as_ref(), folder, check, &mut notes);
-    // Meter readings are laid over the temperatures of every hour that was read; what is run are whole years.
+    // Meter readings are laid over temperature and sun of every hour that was read; what is run are whole years.
     let used = weather.as_mut().map(|read| {
         let whole = read.clone();
-        (
-            read.relative_humidity,
-            read.global_w_per_m2,
-            read.wind_m_per_s,
-        ) = (None, None, None);
+        (read.relative_humidity, read.wind_m_per_s) = (None, None);
         used(whole, &mut notes)
     });
     // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
@@ -155,12 +153,10 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     }
     let bills = weather.as_ref().zip(zone).and_then(|(weather, zone)| {
         let today = raw.today.as_ref();
-        let today_efficiency =
-            today.and_then(|today| today.efficiency.as_ref()?.value().ok().copied());
         let home = raw.home.as_ref();
         let over = Over {
             home,
-            today_efficiency,
+            today,
             weather,
             facts: &facts,
             zone,
@@ -202,6 +198,17 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
                 }
             }
         }
+    }
+    if let (Some(first), Some(site)) = (contenders.first(), &site) {
+        let lowest_c = site.outdoor_c.iter().copied().fold(f64::INFINITY, f64::min);
+        findings.extend(design_beside_weather(
+            first.design_outdoor_c,
+            facts.design_c,
+            lowest_c,
+        ));
+    }
+    if let (Some(table), Some(energy), Some(zone)) = (&raw.energy, &energy, zone) {
+        findings.extend(of_another_country(table, energy.currency, zone));
     }
     let told = raw
         .choice

@@ -66,9 +66,13 @@ pub struct Args {
     /// Also run every system all day at its set point beside a set-back.
     #[arg(long)]
     patterns: bool,
-    /// Samples for the odds of every choice, in blocks of 20; 0 leaves them out. `odds` draws more and says what to find out.
+    /// Samples for the odds of every choice, in blocks of 5; 0 leaves them out. `odds` draws more and says what to find out.
     #[arg(long, default_value_t = 80, value_parser = clap::value_parser!(u32).range(0..=100_000))]
     samples: u32,
+    /// Run weather of less than a year all the same: figures of these days, with no word of a year; DIR then gets ledgers and
+    /// result.json only.
+    #[arg(long)]
+    part_year: bool,
     /// Print every default with its source, and stop.
     #[arg(long)]
     show_defaults: bool,
@@ -90,6 +94,11 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         Some(path) => Brief::read(path)?,
         None => Brief::demonstration()?,
     };
+    let days = brief.days_of_a_part_year().filter(|_| args.part_year);
+    let brief = match days {
+        Some(_) => brief,
+        None => brief.of_a_year("; --part-year runs these days without a word of a year")?,
+    };
     if let Some(folder) = &args.out {
         check_folder(folder, ALWAYS, args.force)?;
     }
@@ -107,10 +116,14 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
     progress.at("break-even");
     let mut estimate = compose(&brief.case, &outcomes, &brief.told)?;
-    let sampled = sampled(&brief, args.samples as usize)?;
+    if let Some(days) = days {
+        estimate = estimate.of_days(days);
+    }
+    let samples = if days.is_some() { 0 } else { args.samples };
+    let sampled = sampled(&brief, samples as usize)?;
     estimate.odds = sampled
         .as_ref()
-        .and_then(|(sampler, blocks)| summary(&brief.case, sampler, blocks));
+        .and_then(|(sampler, blocks)| summary(&brief.case, &outcomes, sampler, blocks));
     if args.bills {
         estimate = estimate.with_bills(&brief.case, &outcomes)?;
     }
@@ -152,7 +165,7 @@ type Sampled = (Sampler, Vec<Vec<Sample>>);
 /// A modest sample for the odds of every choice; nothing where none was wished for.
 fn sampled(brief: &Brief, samples: usize) -> Result<Option<Sampled>, Problems> {
     /// Samples of a block.
-    const BLOCK: usize = 20;
+    const BLOCK: usize = 5;
     /// The same seed as that of `odds`; the same estimate gives the same bytes.
     const SEED: u64 = 1;
     if samples == 0 || brief.case.contenders.len() < 2 {
@@ -189,6 +202,9 @@ fn files(
         let content = ledger_csv(ledger, &case.site.axis, case.time_zone)?;
         let name = format!("ledger-{}-{label}.csv", i + 1);
         files.push(NewFile::new(folder.join(name), content));
+    }
+    if material.estimate.weather.part_year_days.is_some() {
+        return Ok(files);
     }
     let mut drawn = pictures(material)?;
     if let Some(blocks) = samples {

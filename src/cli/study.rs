@@ -65,7 +65,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     let over = problems.take(lever("--over", &args.over));
     let against = problems.take(lever("--against", &args.against));
     let brief = match &args.brief {
-        Some(path) => problems.take(Brief::read(path)),
+        Some(path) => problems.take(Brief::read(path).and_then(|brief| brief.of_a_year(""))),
         None => problems.take(Brief::demonstration()),
     };
     let choices = brief

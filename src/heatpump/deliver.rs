@@ -21,13 +21,15 @@ const LEFT_TOLERANCE: f64 = 1e-5;
 const LEAST_STIFFNESS: f64 = 0.5;
 /// Most steps of either.
 const MOST_RISE_STEPS: usize = 30;
+/// A flow asked this much above the highest is the highest, K: rounding.
+const ROUNDING_K: f64 = 1e-6;
 /// Difference of wanted and greatest heat that is no shortfall, relative: rounding.
 const ENOUGH: f64 = 1e-9;
 
 impl HeatPump {
     /// What the machine does with an hour.
     ///
-    /// Outside its limits it stands, or gives what it can below its highest flow temperature. Where what it draws would bring the
+    /// Outside its limits it stands, and where a flow above its highest is asked. Where what it draws would bring the
     /// source below its lowest, it turns down to what the source bears, and stands when that is less than its least. Between its least and greatest
     /// output it runs all the time at the heat wanted; below it goes on and off at a hotter flow; a block at full output runs
     /// until it is done. Frost (outdoor air only) follows coil temperature and humidity; without humidity the air is that of the
@@ -43,13 +45,12 @@ impl HeatPump {
             return Delivered::standing(flags);
         }
         let highest_c = core.limits.highest_flow_at(cold.open_c);
-        flags.capped_flow = duty.flow_c > highest_c;
-        let lifted = share_below(highest_c, duty);
-        if lifted <= 0.0 {
+        if duty.flow_c > highest_c + ROUNDING_K {
+            flags.too_hot = true;
             return Delivered::standing(flags);
         }
         let flow_c = lesser(duty.flow_c, highest_c);
-        let wanted_kw = duty.heat_kw * lifted / self.scale;
+        let wanted_kw = duty.heat_kw / self.scale;
         let moisture = self.moisture(cold);
 
         let wanted = if duty.at_full_output {
@@ -248,16 +249,4 @@ impl OnAndOff<'_> {
     fn share(&self, least_kw: f64) -> f64 {
         lesser(self.wanted_kw / least_kw, 1.0)
     }
-}
-
-/// Share of the heat wanted that lies below a highest flow temperature: the machine warms the return up to there, and backup lifts
-/// the rest.
-fn share_below(highest_c: f64, duty: &Duty) -> f64 {
-    if duty.flow_c <= highest_c {
-        return 1.0;
-    }
-    if duty.spread_k <= 0.0 {
-        return 0.0;
-    }
-    (1.0 - (duty.flow_c - highest_c) / duty.spread_k).max(0.0)
 }

@@ -10,6 +10,7 @@ mod compressor;
 mod correction;
 pub mod cycle;
 mod deliver;
+mod discharge;
 mod doubted;
 mod duty;
 mod exact;

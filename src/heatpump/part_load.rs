@@ -12,7 +12,7 @@ const WIDEST_SPREAD_K: f64 = 10.0;
 /// How much hotter the flow is while running than it would be running all the time at the same heat, K.
 ///
 /// The water keeps its flow rate, so its spread grows from `spread_k` (at the mean load) to `spread_k / share` while running, and
-/// the flow is hotter by the running spread × (1 − share): 0.31 at a running spread of 5 K is 3.45 K (methods §16). `share` is the
+/// the flow is hotter by the running spread × (1 − share): 0.31 at a running spread of 5 K is 3.45 K. `share` is the
 /// share of the time that it runs, 0..1.
 pub fn running_rise_k(spread_k: f64, share: f64) -> f64 {
     if fault::on(Fault::CyclingAtMeanFlow) {
@@ -67,7 +67,7 @@ mod tests {
     use crate::heatpump::rating::cycling_cop;
     use proptest::prelude::*;
 
-    /// methods §16: running fraction 0.31 at 5 K is +3.5 K.
+    /// By hand, 5 K × (1 − 0.31): running fraction 0.31 at 5 K is +3.5 K.
     #[test]
     fn the_flow_is_hotter_while_running() {
         assert!((running_rise_k(0.31 * 5.0, 0.31) - 3.45).abs() < 1e-12);

@@ -270,7 +270,8 @@ mod tests {
         }
     }
 
-    /// methods §11: class C, 200/250/300 L lose 86/92/98 W at 65 °C; 57 W for 200 L at 50 °C in 20 °C air.
+    /// Regulation (EU) 812/2013, upper limit of class C, 16.66 + 8.33 V^0.4 W (secondary source): 200/250/300 L lose
+    /// 86/92/98 W at 65 °C; 57 W for 200 L at 50 °C in 20 °C air.
     #[test]
     fn standing_loss_follows_the_label_class() {
         for (volume, watts) in [(200.0, 86.0), (250.0, 92.0), (300.0, 98.0)] {

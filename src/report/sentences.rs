@@ -8,6 +8,7 @@ use minijinja::{AutoEscape, Environment, Error, ErrorKind, Output, State, Value}
 use super::facts::facts;
 use super::pictures::{Drawn, Material};
 use crate::locale::Locale;
+use crate::units::as_set;
 
 /// A section of the report.
 #[derive(Debug, Clone)]
@@ -34,7 +35,7 @@ sections! {
     "change", "What would change it";
     "next", "What to find out next";
     "odds", "How sure it is";
-    "home", "The home, and what was assumed";
+    "home", "The home";
     "weather", "The weather, and how good it is";
     "systems", "Each system";
     "air-ground", "Air against ground";
@@ -48,6 +49,7 @@ sections! {
     "cautions", "Cautions";
     "limits", "Limits of the method";
     "findings", "Findings";
+    "assumed", "What was assumed";
     "glossary", "Words";
     "origin", "Where this is from";
 }
@@ -132,6 +134,9 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
     environment.add_filter("n", move |value: Value, decimals: usize| {
         told(&value, &|v| marks.number(v, decimals))
     });
+    environment.add_filter("as_set", move |value: Value| {
+        told(&value, &|v| marks.localized(&as_set(v)))
+    });
     environment.add_filter("percent", move |value: Value, decimals: usize| {
         told(&value, &|v| {
             format!("{}\u{a0}%", marks.number(v * 100.0, decimals))
@@ -180,7 +185,7 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
                 "dec1" => Ok(marks.number(number, 1)),
                 "dec2" => Ok(marks.number(number, 2)),
                 "percent" => Ok(format!("{}\u{a0}%", marks.number(number * 100.0, 0))),
-                "c0" => Ok(format!("{}\u{a0}°C", marks.number(number, 0))),
+                "set" => Ok(marks.localized(&format!("{}\u{a0}°C", as_set(number)))),
                 _ => Err(Error::new(
                     ErrorKind::InvalidOperation,
                     format!("no way to show “{kind}”"),

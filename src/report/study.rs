@@ -33,6 +33,10 @@ fn choice_text(choice: &ChoiceStudy, currency: &str) -> String {
         "{}: {:.0} {currency} a year, {:+.0} against today",
         choice.label, choice.cost, choice.saving
     )];
+    if let Some(cold) = &choice.leaves_cold {
+        let line = format!("No, {cold}: cheaper is of no use here. More heat comes first.");
+        blocks.push(wrapped(&line, "", "  "));
+    }
     let answered = |measure: &'static str| {
         choice
             .break_even
@@ -260,7 +264,8 @@ fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
     let cooling = systems.iter().filter(|system| system.each_year_its_own);
     let cooling: String = cooling.filter_map(own_years).collect();
     format!(
-        "{}\n{table}{cooling}",
-        wrapped(&format!("Over the years: {}", lifetime.terms), "", "  ")
+        "{}\n{table}{cooling}\n{}",
+        wrapped(&format!("Over the years: {}", lifetime.terms), "", "  "),
+        wrapped(&lifetime.todays_next, "", "  ")
     )
 }

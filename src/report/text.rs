@@ -18,6 +18,7 @@ const SYSTEMS_ABREAST: usize = 4;
 /// assumption is from.
 pub fn estimate_text(estimate: &Estimate, marks: &Marks, sources: bool) -> String {
     let mut text = heading(estimate, marks);
+    let part_year = estimate.weather.part_year_days;
     let (today, choices): (Vec<_>, Vec<_>) =
         estimate.systems.iter().partition(|system| system.today);
     for group in choices.chunks(SYSTEMS_ABREAST - 1) {
@@ -33,6 +34,9 @@ pub fn estimate_text(estimate: &Estimate, marks: &Marks, sources: bool) -> Strin
             .break_even
             .get(&choice.label)
             .map_or(&[][..], Vec::as_slice);
+        if part_year.is_some() {
+            continue;
+        }
         let _ = writeln!(
             text,
             "{}",
@@ -49,6 +53,12 @@ pub fn estimate_text(estimate: &Estimate, marks: &Marks, sources: bool) -> Strin
                 wrapped(&marks.localized(&shifting.sentence), "  ", "  ")
             );
         }
+    }
+    if let Some(days) = part_year {
+        let said = format!(
+            "{days} days are no year: no saving of a year, no payback and no chance can be told from them, and standing charges are those of these days."
+        );
+        let _ = writeln!(text, "{}", wrapped(&said, "", "  "));
     }
     for line in home_in_words(estimate) {
         let _ = writeln!(text, "{}", wrapped(&marks.localized(&line), "", "  "));
@@ -69,18 +79,15 @@ fn odds_in_brief(odds: &OddsSummary) -> String {
     );
     let mut lines = vec![wrapped(&heading, "", "  ")];
     for choice in &odds.choices {
-        let error = choice.chance_error.map_or_else(String::new, |error| {
-            // A whole percent: the error of an error is large.
-            format!(" ± {:.0}", (error * 100.0).max(1.0))
-        });
         let said = format!(
-            "{} Chance {:.0}{error} %. {}",
+            "{} Chance {} %. {}",
             choice.sentence,
-            choice.chance_cheaper * 100.0,
+            choice.chance_said,
             choice.depends_on.as_deref().unwrap_or_default()
         );
         lines.push(wrapped(said.trim_end(), "", "  "));
     }
+    lines.push(wrapped(&odds.not_drawn, "", "  "));
     lines.join("\n")
 }
 
@@ -97,9 +104,10 @@ fn heading(estimate: &Estimate, marks: &Marks) -> String {
         0 => String::new(),
         hours => format!(", {hours} h repaired"),
     };
-    let years = match weather.years {
-        0 | 1 => String::new(),
-        years => format!(", mean of {years} years"),
+    let period = match (weather.part_year_days, weather.years) {
+        (Some(days), _) => format!("in these {days} days, no year"),
+        (None, 0 | 1) => "in a year".to_owned(),
+        (None, years) => format!("in a year, mean of {years} years"),
     };
     let loss = format!(
         "{:.0} W/K, {:.1} kW at {:.1} °C outdoors without gains",
@@ -110,7 +118,7 @@ fn heading(estimate: &Estimate, marks: &Marks) -> String {
         weather.hours, weather.mean_c, weather.min_c,
     );
     format!(
-        "{label}: heating and hot water in a year{years}\n\
+        "{label}: heating and hot water {period}\n\
          Home     {}\n\
          Weather  {}: {}\n\n",
         marks.localized(&loss),
@@ -220,6 +228,7 @@ const LINES: &[Line] = &[
     ("Design load carried", |s| {
         Some(format!("{:.0} %", 100.0 + s.design.margin_percent))
     }),
+    ("  limited by", |s| Some(s.design.limited_by.clone())),
     ("Coldest indoors", |s| {
         Some(format!("{:.1} °C", s.min_indoor_c))
     }),
@@ -228,9 +237,9 @@ const LINES: &[Line] = &[
 fn table(systems: &[&SystemAnswer], currency: &str, marks: &Marks) -> String {
     let names = systems.iter().map(|system| {
         if system.today {
-            format!("{} (today)", system.label)
+            format!("{} (today)", system.name())
         } else {
-            system.label.clone()
+            system.name()
         }
     });
     let rows = LINES.iter().filter_map(|(name, figure)| {
@@ -265,6 +274,13 @@ fn in_words(
     } else {
         format!("about {:.0} {currency} a year more than today", -saving)
     };
+    if let Some(cold) = &choice.leaves_cold {
+        return format!(
+            "{}: no, {}. Left as cold as that it would cost {difference}.",
+            choice.label,
+            marks.localized(cold)
+        );
+    }
     let conditions: Vec<_> = levers
         .iter()
         .flat_map(|lever| lever.conditions.iter().map(|said| marks.localized(said)))

@@ -4,13 +4,14 @@ use super::rooms::Rooms;
 use super::row::{Flags, Row};
 use super::step::{DutyKind, Probe};
 use super::system::{MachineSystem, State};
+use super::warm_side::WarmSide;
 use crate::extremes::{greater, lesser};
 use crate::fault::{self, Fault};
 use crate::heatpump::{ColdSide, Delivered, Duty, running_spread_k};
-use crate::home::{Control, Home, StoreStep};
+use crate::home::{Home, StoreStep};
 
 /// A heat that is short by less than this share is short by rounding only.
-const ROUNDING: f64 = 1e-9;
+pub(super) const ROUNDING: f64 = 1e-9;
 
 /// Less than this part of an hour is not worth a start, h.
 const LEAST_RUN_H: f64 = 1e-6;
@@ -24,55 +25,66 @@ pub(super) fn ground_hour(hour: usize, system: &MachineSystem, state: &mut State
     row.returned_kwh = source.returned_kwh(hour);
 }
 
-/// A heat pump: a block of hot water first, the rooms in what is left of the hour, backup for what is missing.
+/// A heat pump: a block of hot water first, the rooms in what is left of the hour, and behind it backup or a boiler of a power (kW)
+/// that lifts the flow where the rooms would fall too low. Gives what is left to the boiler, kWh.
 pub(super) fn heat_pump_hour<P: Probe>(
     system: &MachineSystem,
+    lift_kw: f64,
     home: &Home,
     cold: &ColdSide,
     water: &StoreStep,
     rooms: &Rooms,
     row: &mut Row,
     probe: &mut P,
-) {
+) -> f64 {
     let mut hours_left = 1.0;
+    let mut unlifted_kwh = 0.0;
     if water.wanted_kwh > 0.0 {
         let used = hot_water_block(system, home, cold, water, row, probe);
         hours_left -= used;
     }
     if rooms.wanted_kw > 0.0 {
+        // In an hour that hot water takes whole, help comes alone.
+        let mut lifted_kwh = rooms.least_kwh.clamp(0.0, lift_kw);
         if hours_left > LEAST_RUN_H {
             // What hot water took from the hour is left to the fabric's storage: a compensated flow is not raised for it.
             let shared_c = row
                 .water_flow_c
                 .filter(|_| fault::on(Fault::OneFlowForBothDuties));
-            let ask = |heat_kw: f64| {
-                let warm = home.emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
-                Duty {
-                    heat_kw: warm.heat_kw,
-                    flow_c: shared_c.unwrap_or(warm.water.flow_c + home.emitters.header_k()),
-                    spread_k: warm.spread_k,
-                    hours: hours_left,
-                    at_full_output: false,
-                }
+            let warm_side = WarmSide {
+                system,
+                emitters: &home.emitters,
+                cold,
+                rooms,
+                hours: hours_left,
+                lift_kw,
+                held_flow_c: shared_c,
             };
-            let (duty, delivered) = in_balance(system, cold, rooms.wanted_kw, ask);
-            let asked_kw = rooms.wanted_kw * (1.0 - ROUNDING);
-            let by_control = duty.heat_kw < asked_kw && !delivered.flags.short;
-            row.flags |= Flags::FLOW_TOO_COOL.when(by_control);
-            probe.see(DutyKind::SpaceHeat, cold, &duty, &delivered);
+            let balanced = warm_side.balance();
+            let (duty, delivered) = (&balanced.duty, &balanced.delivered);
+            row.flags |= Flags::FLOW_TOO_COOL.when(balanced.too_cool)
+                | Flags::FLOW_CAPPED.when(balanced.capped);
+            probe.see(DutyKind::SpaceHeat, cold, duty, delivered);
             row.machine_space_kwh = delivered.heat_kwh;
-            row.machine_space_electricity_kwh = charge(row, &delivered);
+            row.machine_space_electricity_kwh = charge(row, delivered);
             row.space_cop = cop(delivered.heat_kwh, row.machine_space_electricity_kwh);
             if delivered.heat_kwh > 0.0 {
-                let to_emitters_c = delivered.flow_c - home.emitters.header_k();
-                let throttled_k = throttled_k(home, rooms, duty.heat_kw);
                 row.machine_flow_c = Some(delivered.flow_c);
+            }
+            lifted_kwh = balanced.lifted_kwh;
+            if let Some(water) = balanced.lifted_water {
+                row.space_flow_c = Some(water.flow_c);
+                row.space_return_c = Some(water.return_c);
+            } else if delivered.heat_kwh > 0.0 {
+                let to_emitters_c = delivered.flow_c - home.emitters.header_k();
                 row.space_flow_c = Some(to_emitters_c);
-                row.space_return_c =
-                    Some(to_emitters_c - throttled_k - delivered_spread_k(&duty, &delivered));
+                row.space_return_c = Some(
+                    to_emitters_c - balanced.throttled_k - delivered_spread_k(duty, delivered),
+                );
             }
         }
-        row.backup_kwh = (rooms.least_kwh - row.machine_space_kwh).clamp(0.0, system.backup_kw);
+        row.backup_kwh = lesser(lifted_kwh, system.backup_kw);
+        unlifted_kwh = lifted_kwh - row.backup_kwh;
         row.flags |= Flags::BACKUP.when(row.backup_kwh > 0.0);
         row.circulation_kwh = system.circulation_kw * hours_left;
     }
@@ -86,48 +98,7 @@ pub(super) fn heat_pump_hour<P: Probe>(
         idle.standby_kw + idle.crankcase_kw
     };
     row.idle_kwh = at_rest_kw * greater(1.0 - row.running_hours, 0.0);
-}
-
-/// The machine in balance with the emitters: where it cannot give what is asked, the flow is what the emitters need for the heat it
-/// does give, which is more at the lower flow.
-#[inline]
-fn in_balance(
-    system: &MachineSystem,
-    cold: &ColdSide,
-    wanted_kw: f64,
-    ask: impl Fn(f64) -> Duty,
-) -> (Duty, Delivered) {
-    /// Heat asked and heat given agree to this share.
-    const TOLERANCE: f64 = 1e-4;
-    /// Substitutions; output falls by a few percent over the kelvins in question, so each gains more than a digit.
-    const MOST: usize = 12;
-    let mut duty = ask(wanted_kw);
-    let mut delivered = system.machine.deliver(cold, &duty);
-    for _ in 0..MOST {
-        let given_kw = delivered.heat_kwh / duty.hours;
-        let short = delivered.flags.short && given_kw > 0.0;
-        if !short || given_kw >= duty.heat_kw * (1.0 - TOLERANCE) {
-            break;
-        }
-        duty = ask(given_kw);
-        // Asked for what it gave at a hotter flow, it could give more: its greatest output at this flow is the next guess.
-        let greatest_kw = system.machine.greatest_output_kw(cold, duty.flow_c);
-        duty = ask(greatest_kw.clamp(given_kw, wanted_kw));
-        delivered = system.machine.deliver(cold, &duty);
-    }
-    (duty, delivered)
-}
-
-/// By how much the valves cool the return below that of the designed water flow, K.
-#[inline]
-fn throttled_k(home: &Home, rooms: &Rooms, heat_kw: f64) -> f64 {
-    match home.emitters.control() {
-        Control::FollowingLoad => 0.0,
-        Control::Line { .. } | Control::Fixed(_) => {
-            let warm = home.emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
-            warm.water.flow_c - warm.water.return_c - warm.spread_k
-        }
-    }
+    unlifted_kwh
 }
 
 /// Flow minus return while the machine runs: the design water flow carries the heat of the running time, held to what pump and
@@ -208,7 +179,6 @@ fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
         );
     }
     row.flags |= Flags::CYCLING.when(delivered.flags.cycling)
-        | Flags::FLOW_CAPPED.when(delivered.flags.capped_flow)
         | Flags::MACHINE_STOPPED.when(delivered.flags.stopped)
         | Flags::TURNED_DOWN.when(delivered.flags.turned_down)
         | Flags::AT_GREATEST_OUTPUT.when(delivered.flags.short)

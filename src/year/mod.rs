@@ -16,6 +16,7 @@ mod site;
 mod step;
 mod system;
 mod totals;
+mod warm_side;
 mod water;
 
 pub use ledger::Ledger;

@@ -115,7 +115,16 @@ fn fill<P: Probe>(
                 k_per_kw: offer.k_per_kw,
                 relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
             };
-            heat_pump_hour(system, home, &cold, &water, &rooms, row, probe);
+            heat_pump_hour(
+                system,
+                system.backup_kw,
+                home,
+                &cold,
+                &water,
+                &rooms,
+                row,
+                probe,
+            );
             ground_hour(hour, system, state, row);
         }
         Heating::Boiler {

@@ -6,7 +6,7 @@ use serde::Deserialize;
 use crate::brief::clock_leaves::{ClockHour, DaySpans, Spells, WeekDay};
 use crate::brief::leaves::{ColdWater, HeatLossSource, HygieneBy, Line, SetBack};
 use crate::document::{Leaf, LeafValue, Section, Word};
-use crate::heater::GrossEfficiency;
+use crate::heater::StatedEfficiency;
 use crate::home::{Construction, EmitterKind, TappingProfile, WarmUp};
 use crate::units::{
     AirChangeRate, AirVolume, Area, Duration, Energy, HeatLossCoefficient, Power, Share,
@@ -110,13 +110,17 @@ pub(in crate::brief) struct BillsTable {
     /// Factor that brings a metered volume to the conditions of the calorific value.
     pub volume_correction: Option<Leaf<f64>>,
     /// Seasonal efficiency of today's heater, "82 % gross".
-    pub efficiency: Option<Leaf<GrossEfficiency>>,
+    pub efficiency: Option<Leaf<StatedEfficiency>>,
     /// The efficiency is within this many percentage points, with 95 % confidence.
     pub efficiency_within: Option<Leaf<Share>>,
     /// Part of the load without heating that is hot water.
     pub hot_water_share: Option<Leaf<Share>>,
     /// That part is within this many percentage points, with 95 % confidence.
     pub hot_water_share_within: Option<Leaf<Share>>,
+    /// Set point and internal gains together are within this many kelvins of the set point, with 95 % confidence.
+    pub indoor_within: Option<Leaf<TemperatureDifference>>,
+    /// The solar gains are within this share, with 95 % confidence.
+    pub sun_within: Option<Leaf<Share>>,
     /// Scale the heat loss of every system so that today's fuel is what was metered.
     pub scale: Option<Leaf<bool>>,
 }

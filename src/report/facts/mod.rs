@@ -9,10 +9,11 @@ use serde::Serialize;
 use serde_json::{Map, Value, json};
 
 use super::pictures::Material;
+use crate::answer::lifetime::SystemLifetime;
 use hour::coldest;
 use next::next_steps;
 use sources::{assumptions, refrigerants};
-use system::system;
+use system::{mark, system};
 
 /// Systems beside each other in a table, today's among them.
 const ABREAST: usize = 4;
@@ -34,7 +35,12 @@ pub(super) fn facts(material: &Material<'_>) -> Value {
     let (today, mut choices): (Vec<&Value>, Vec<&Value>) =
         systems.iter().partition(|s| s["today"] == true);
     let groups = groups(&today, &choices);
-    choices.sort_by(|a, b| number(a, "cost").total_cmp(&number(b, "cost")));
+    // What leaves the home cold stands behind all others, however cheap it is.
+    let cold = |system: &Value| system["leaves_cold"].is_string();
+    choices.sort_by(|a, b| {
+        let by_cost = number(a, "cost").total_cmp(&number(b, "cost"));
+        cold(a).cmp(&cold(b)).then(by_cost)
+    });
     let cheapest = |kind: &str| choices.iter().find(|s| s["kind"] == kind).copied();
     let mut put = |name: &str, value: Value| {
         facts.insert(name.to_owned(), value);
@@ -42,7 +48,8 @@ pub(super) fn facts(material: &Material<'_>) -> Value {
     if let Some(today) = today.first() {
         put("today", (*today).clone());
     }
-    if let (Some(best), Some(worst)) = (choices.first(), choices.last()) {
+    let warm = choices.iter().filter(|choice| !cold(choice));
+    if let (Some(best), Some(worst)) = (choices.first(), warm.last().or(choices.last())) {
         let saving = number(best, "saving");
         put(
             "same",
@@ -82,7 +89,13 @@ pub(super) fn facts(material: &Material<'_>) -> Value {
         put("coldest", hour);
     }
     if let Some(lifetime) = &estimate.lifetime {
-        let systems: Vec<Value> = lifetime.systems.iter().map(|s| json!(s)).collect();
+        let marked = |of: &SystemLifetime| {
+            let mut facts = object(of);
+            let system = estimate.systems.iter().find(|s| s.label == of.label);
+            facts.insert("mark".to_owned(), json!(system.map(mark)));
+            Value::Object(facts)
+        };
+        let systems: Vec<Value> = lifetime.systems.iter().map(marked).collect();
         let (today, others): (Vec<&Value>, Vec<&Value>) =
             systems.iter().partition(|s| s["today"] == true);
         put("lifetime_groups", json!(self::groups(&today, &others)));

@@ -27,7 +27,7 @@ pub(super) fn annual_cost(material: &Material<'_>) -> Result<Drawn, ChartError> 
     let left_out = costs.len() - shown.len();
     let systems = shown.iter().map(|&i| &estimate.systems[i]);
     let systems = systems.map(|s| chart::SystemCost {
-        label: s.label.clone(),
+        label: s.name(),
         today: s.today,
         energy: s.cost_energy,
         standing: s.cost_standing,
@@ -64,7 +64,7 @@ fn cost_bars(material: &Material<'_>) -> Vec<Bar> {
         ];
         let today = if s.today { " (today)" } else { "" };
         Bar {
-            label: format!("{}{today}", chart::plain_line(&s.label)),
+            label: format!("{}{today}", chart::plain_line(&s.name())),
             parts: parts
                 .into_iter()
                 .filter_map(|(name, amount)| {
@@ -141,8 +141,11 @@ pub(super) fn spend(material: &Material<'_>) -> Result<Option<Drawn>, ChartError
         systems: systems.collect(),
     };
     let picture = chart::cumulative_spend(&data, &marks)?;
-    let caption = "All that is spent so far, year after year: what is put in, energy, upkeep and what must be bought again. Where two lines \
-cross, one has caught up with the other.";
+    let caption = format!(
+        "All that is spent so far, year after year: what is put in, energy, upkeep and what must be bought again. Where two lines \
+cross, one has caught up with the other. {}",
+        lifetime.todays_next
+    );
     Ok(Some(drawn("spend", caption, picture)))
 }
 
