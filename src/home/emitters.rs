@@ -195,6 +195,7 @@ impl Emitters {
     ///
     /// EN 442: output ∝ excess temperature ^ n with the arithmetic mean water temperature; the water flow stays as
     /// designed, so flow minus return is proportional to the heat. One power a group.
+    #[inline]
     pub fn at_load(&self, heat_kw: f64, room_c: f64) -> WaterTemperatures {
         let share = heat_kw / self.design_load_kw;
         let leading = self.groups[0].at_share(share, self.room_c, room_c);
@@ -234,6 +235,7 @@ impl Emitters {
     ///
     /// A flow hotter than needed is throttled by the room valves: the same mean water, a cooler return. A cooler flow carries
     /// less heat.
+    #[inline]
     pub fn supply(&self, heat_kw: f64, room_c: f64, outdoor_c: f64) -> Supply {
         match self.control.flow_c(outdoor_c) {
             None => {
