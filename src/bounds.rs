@@ -108,6 +108,8 @@ bounds! {
     AUXILIARY_KW = "auxiliary power", 0.0 ..= 2.0, "kW";
     /// Boiler efficiency on gross calorific value: a perfect condensing boiler cannot exceed 1.
     GROSS_EFFICIENCY = "efficiency on gross calorific value", 0.3 ..= 1.0, "";
+    /// How far the stated set point and gains may be from the truth.
+    INDOOR_WITHIN_K = "doubt about the set point", 0.0 ..= 10.0, "K";
     /// A share of something.
     SHARE = "share", 0.0 ..= 1.0, "";
     /// Undisturbed ground.

@@ -589,7 +589,7 @@ fn metered(bills: &BillsTold, case: &Case, today: &Outcome) -> MeteredAnswer {
     let metered_kwh = fuel.value / years;
     let modelled_kwh = today.mean_sums().fuel_kwh;
     let difference_percent = (modelled_kwh / metered_kwh - 1.0) * 100.0;
-    let loss = signature.heat_loss_w_per_k;
+    let loss = signature.heat_loss();
     let mut sentence = format!(
         "{}: {:.0} W/K ({:.0} to {:.0}); today's fuel in this weather {metered_kwh:.0} kWh by the meter, {modelled_kwh:.0} kWh \
          modelled ({difference_percent:+.0} %)",

@@ -1,5 +1,6 @@
 //! From meter readings and the brief to the home's energy signature.
 
+use std::borrow::Cow;
 use std::path::Path;
 
 use chrono_tz::Tz;
@@ -9,12 +10,14 @@ use super::files::Folder;
 use super::home::WeatherFacts;
 use super::leaves::HeatLossSource;
 use super::notes::Notes;
+use super::own_home::{OwnHomeModel, Today};
 use super::raw;
 use crate::bounds;
 use crate::document::{Check, Document, Leaf, Section, read_text};
-use crate::heater::GrossEfficiency;
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
-use crate::signature::{Conversion, DailyWeather, FitProblem, Readings, Signature, Stated, fit};
+use crate::signature::{
+    Conversion, DailyWeather, Doubt, FitProblem, Interval, Readings, Signature, Stated, fit, fit_own_home,
+};
 use crate::units::{CalorificValue, Fuel, Temperature, parse};
 use crate::weather::{ReadOptions, Weather, read_bytes};
 
@@ -36,12 +39,22 @@ pub struct BillsMade {
 /// What readings are laid over.
 pub(super) struct Over<'a> {
     pub home: Option<&'a Section<raw::Home>>,
-    /// Efficiency that today's table states.
-    pub today_efficiency: Option<GrossEfficiency>,
+    pub today: Today<'a>,
     pub weather: &'a Weather,
     pub facts: &'a WeatherFacts,
     pub zone: Tz,
     pub folder: &'a Folder,
+}
+
+impl Over<'_> {
+    fn table(&self) -> Option<&Section<raw::BillsTable>> {
+        self.home?.bills.as_ref()
+    }
+
+    /// Whether an efficiency is stated for the readings, in place of that of today's boiler.
+    pub fn states_efficiency(&self) -> bool {
+        self.table().is_some_and(|table| table.efficiency.is_some())
+    }
 }
 
 /// The readings that a brief names, in its heat_loss or under home.bills; inner nothing when it names none.
@@ -88,33 +101,149 @@ pub(super) fn made(
     check: &mut Check,
     notes: &mut Notes,
 ) -> Option<BillsMade> {
-    let table = over.home.and_then(|home| home.bills.as_ref());
+    let table = over.table();
     let conversion = conversion(table, check, notes);
     let stated = stated(table, over, check, notes);
+    let doubt = doubt(table, check);
     let scale = table
         .and_then(|table| check.value(&table.scale))
         .unwrap_or(false);
     let weather = own_weather(table, over, check);
     let readings = check.take(Readings::read(name, text, &conversion?));
-    let (readings, stated, days) = (readings?, stated?, weather?);
-    let signature = check
-        .take(fit(&readings.intervals, &days, &stated).map_err(|why| told(why, name, &days)))?;
-    let mut findings = readings.findings;
-    findings.extend(odd(name, &readings.intervals, &signature));
-    findings.extend(implausible(name, &signature, over, check));
+    let (readings, stated, doubt, weather) = (readings?, stated?, doubt?, weather?);
+    let civil = weather.axis.civil(over.zone);
+    let days = DailyWeather::of_hours(&civil, &weather.outdoor_c);
     let survey_w_per_k = over
         .home
         .and_then(|home| match home.heat_loss.as_ref()?.value() {
             Ok(HeatLossSource::Stated(loss)) => Some(loss.w_per_k()),
             _ => None,
         });
-    findings.extend(survey_w_per_k.and_then(|survey| apart(name, &signature, survey)));
-    Some(BillsMade {
+    let line = fit(&readings.intervals, &days, &stated);
+    let mut made = BillsMade {
         file: name.to_owned(),
-        signature,
+        signature: check.take(line.map_err(|why| told(why, name, &days)))?,
         scale,
-        findings,
+        findings: Vec::new(),
         survey_w_per_k,
+    };
+    let within = Within {
+        intervals: &readings.intervals,
+        days: &days,
+        stated,
+        doubt,
+    };
+    check.take(
+        through_own_home(&mut made, over, &weather, &within, check, notes)
+            .map_err(|why| told(why, name, &days)),
+    )?;
+    let signature = &made.signature;
+    let mut findings = readings.findings;
+    findings.extend(odd(name, &readings.intervals, signature));
+    findings.extend(implausible(name, signature, over, check));
+    findings.extend(survey_w_per_k.and_then(|survey| apart(name, signature, survey)));
+    made.findings = findings;
+    Some(made)
+}
+
+/// Readings, their days, and what is known about them.
+struct Within<'a> {
+    intervals: &'a [Interval],
+    days: &'a DailyWeather,
+    stated: Stated,
+    doubt: DoubtOf,
+}
+
+/// Runs the home's own model over the readings, where the brief describes it.
+///
+/// Emitters are sized by the heat loss, and the heat loss is found with the boiler that heats them: twice is enough.
+fn through_own_home(
+    made: &mut BillsMade,
+    over: &Over<'_>,
+    weather: &Weather,
+    within: &Within<'_>,
+    check: &Check,
+    notes: &mut Notes,
+) -> Result<(), FitProblem> {
+    const ROUNDS: usize = 2;
+    let rounds = if made.survey_w_per_k.is_some() { 1 } else { ROUNDS };
+    let mut stated = within.stated;
+    for round in 1..=rounds {
+        let Some(model) = OwnHomeModel::new(over, weather, made, within.intervals, check) else {
+            return Ok(());
+        };
+        let found = made.signature.heat_loss().value;
+        if let Some(efficiency) = model.efficiency(made.survey_w_per_k.unwrap_or(found)) {
+            stated.efficiency = efficiency;
+            made.signature = fit(within.intervals, within.days, &stated)?;
+        }
+        let doubt = Doubt {
+            warmer_k: if model.has_base_temperature() {
+                within.doubt.base_k
+            } else {
+                within.doubt.warmer_k
+            },
+            sun: model.knows_sun().then_some(within.doubt.sun),
+        };
+        let own = fit_own_home(
+            within.intervals,
+            within.days,
+            &stated,
+            &doubt,
+            found,
+            &|tried| model.heating_kwh(tried, stated.efficiency),
+        )?;
+        made.signature.own_home = Some(own);
+        if round == rounds {
+            if model.burns() {
+                notes.add(
+                    "home.bills.efficiency",
+                    format!("{:.1} % gross", stated.efficiency * 100.0),
+                    "today's boiler as the estimate runs it, over the days of the readings",
+                );
+            }
+            notes.add(
+                "home.bills.indoor_within",
+                format!("{} K", doubt.warmer_k),
+                "set point and internal gains together, which readings do not tell apart",
+            );
+            if let Some(sun) = doubt.sun {
+                notes.add(
+                    "home.bills.sun_within",
+                    format!("{:.0} %", sun * 100.0),
+                    "windows, their side and shade",
+                );
+            }
+        }
+    }
+    Ok(())
+}
+
+/// What the home's model may be off by.
+#[derive(Clone, Copy)]
+struct DoubtOf {
+    warmer_k: f64,
+    /// The same where gains are what a base temperature says.
+    base_k: f64,
+    sun: f64,
+}
+
+fn doubt(
+    table: Option<&Section<raw::BillsTable>>,
+    check: &mut Check,
+) -> Option<DoubtOf> {
+    // What is used of these is noted once it is known which of them the home has.
+    let mut aside = Notes::default();
+    let (no_k, no_share) = (None, None);
+    let indoor = table.map_or(&no_k, |table| &table.indoor_within);
+    let sun = table.map_or(&no_share, |table| &table.sun_within);
+    let warmer = aside.quantity(check, indoor, &bounds::INDOOR_WITHIN_K, &defaults::INDOOR_WITHIN)?;
+    let base = aside.quantity(check, indoor, &bounds::INDOOR_WITHIN_K, &defaults::BASE_WITHIN)?;
+    let sun = aside.quantity(check, sun, &bounds::SHARE, &defaults::SUN_WITHIN)?;
+    Some(DoubtOf {
+        warmer_k: warmer.k(),
+        base_k: base.k(),
+        sun: sun.fraction(),
     })
 }
 
@@ -162,7 +291,10 @@ fn stated(
         table.map_or(&no_share, |table| get(table))
     };
     let efficiency_leaf = table.map_or(&no_efficiency, |table| &table.efficiency);
-    let efficiency = match (efficiency_leaf, over.today_efficiency) {
+    let of_today = over
+        .today
+        .and_then(|today| today.efficiency.as_ref()?.value().ok().copied());
+    let efficiency = match (efficiency_leaf, of_today) {
         (None, Some(today)) => Some(today),
         _ => notes.word(check, efficiency_leaf, &defaults::BILLS_EFFICIENCY),
     };
@@ -205,26 +337,20 @@ fn stated(
 }
 
 /// The weather of the same period: the readings' own, else that of the brief.
-fn own_weather(
+fn own_weather<'a>(
     table: Option<&Section<raw::BillsTable>>,
-    over: &Over<'_>,
+    over: &Over<'a>,
     check: &mut Check,
-) -> Option<DailyWeather> {
+) -> Option<Cow<'a, Weather>> {
     let path = table.and_then(|table| check.value(&table.weather));
     let Some(path) = path else {
-        let civil = over.weather.axis.civil(over.zone);
-        return Some(DailyWeather::of_hours(&civil, &over.weather.outdoor_c));
+        return Some(Cow::Borrowed(over.weather));
     };
     let bytes = check.take(over.folder.bytes(&path))?;
-    let weather = check.take(read_bytes(
-        &over.folder.name(&path),
-        &bytes,
-        &ReadOptions::default(),
-    ))?;
-    Some(DailyWeather::of_hours(
-        &weather.axis.civil(over.zone),
-        &weather.outdoor_c,
-    ))
+    let name = over.folder.name(&path);
+    check
+        .take(read_bytes(&name, &bytes, &ReadOptions::default()))
+        .map(Cow::Owned)
 }
 
 /// Why there is no signature, as a problem of the file.
@@ -302,7 +428,7 @@ fn implausible(
     check: &mut Check,
 ) -> Option<Finding> {
     let area_m2 = check.value(&over.home?.floor_area)?.m2();
-    let loss = signature.heat_loss_w_per_k.value;
+    let loss = signature.heat_loss().value;
     let each = loss / area_m2;
     (!bounds::HEAT_LOSS_W_PER_K_M2.holds(each)).then(|| {
         Finding::new(
@@ -316,7 +442,7 @@ fn implausible(
 
 /// A survey outside the limits of the readings.
 fn apart(name: &str, signature: &Signature, survey_w_per_k: f64) -> Option<Finding> {
-    let loss = signature.heat_loss_w_per_k;
+    let loss = signature.heat_loss();
     let inside = (loss.low..=loss.high).contains(&survey_w_per_k);
     (!inside).then(|| {
         Finding::new(
@@ -346,17 +472,13 @@ pub(super) fn of_file(
     let zone = super::read::time_zone(raw.home.as_ref(), &mut check, &mut notes);
     let weather = super::weather::weather(raw.weather.as_ref(), &folder, &mut check, &mut notes);
     let readings = check.take(read_text(file));
-    let today_efficiency = raw
-        .today
-        .as_ref()
-        .and_then(|today| check.value(&today.efficiency));
     let found = match (zone, weather, readings) {
         (Some(zone), Some(weather), Some(readings)) => {
             let facts = super::site::facts(&weather);
             let home = raw.home.as_ref();
             let over = Over {
                 home,
-                today_efficiency,
+                today: raw.today.as_ref(),
                 weather: &weather,
                 facts: &facts,
                 zone,

@@ -193,14 +193,14 @@ fn loss(
         }
         (Some(_), Some(HeatLossSource::Bills(_)), None) => {
             // What is wrong with the readings was told where they were read.
-            let found = bills?.signature.heat_loss_w_per_k;
+            let found = bills?.signature.heat_loss();
             notes.add(
                 "home.heat_loss",
                 format!(
                     "{:.0} W/K ({:.0} to {:.0} with 95 % confidence)",
                     found.value, found.low, found.high
                 ),
-                "energy signature of the meter readings",
+                "meter readings, through the home's own model where it is described",
             );
             Some(Loss {
                 from: LossFrom::Bills,

@@ -26,6 +26,7 @@ mod lifetime;
 mod locale;
 mod machine;
 mod notes;
+mod own_home;
 mod odds;
 mod own_fields;
 mod part_year;

@@ -119,14 +119,10 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     let label = raw.home.as_ref().and_then(|home| check.value(&home.label));
     let zone = time_zone(raw.home.as_ref(), check, &mut notes);
     let mut weather = weather(raw.weather.as_ref(), folder, check, &mut notes);
-    // Meter readings are laid over the temperatures of every hour that was read; what is run are whole years.
+    // Meter readings are laid over temperature and sun of every hour that was read; what is run are whole years.
     let used = weather.as_mut().map(|read| {
         let whole = read.clone();
-        (
-            read.relative_humidity,
-            read.global_w_per_m2,
-            read.wind_m_per_s,
-        ) = (None, None, None);
+        (read.relative_humidity, read.wind_m_per_s) = (None, None);
         used(whole, &mut notes)
     });
     // Without weather the systems are still checked, against a stand-in whose results are thrown away with the case.
@@ -157,12 +153,10 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
     }
     let bills = weather.as_ref().zip(zone).and_then(|(weather, zone)| {
         let today = raw.today.as_ref();
-        let today_efficiency =
-            today.and_then(|today| today.efficiency.as_ref()?.value().ok().copied());
         let home = raw.home.as_ref();
         let over = Over {
             home,
-            today_efficiency,
+            today,
             weather,
             facts: &facts,
             zone,

@@ -93,50 +93,93 @@ fn picture(path: &std::path::Path, signature: &Signature) -> Result<Vec<u8>, Fai
 fn text(answer: &BillsAnswer) -> String {
     let limits =
         |pair: [f64; 2], places: usize| format!("{:.places$} to {:.places$}", pair[0], pair[1]);
+    let knows_sun = answer.own_home.as_ref().is_some_and(|own| own.knows_sun);
+    let name = if knows_sun { "Heat loss" } else { "Effective loss" };
     let mut lines = vec![
         format!("{}: {} intervals", answer.file, answer.n),
         String::new(),
         format!(
-            "Heat loss         {:>7.0} W/K       {} with 95 % confidence",
+            "{:<18}{:>7.0} W/K       {} with 95 % confidence",
+            name,
             answer.heat_loss_w_per_k,
             limits(answer.heat_loss_95, 0)
         ),
-        format!(
-            "Base temperature  {:>7.1} °C        {}{}",
-            answer.base_temperature_c,
-            limits(answer.base_temperature_95, 1),
-            if answer.base_temperature_fitted {
-                ""
-            } else {
-                ", of published homes: too few readings to fit it"
-            }
-        ),
-        format!(
-            "Base load         {:>7.1} kWh a day {}",
-            answer.base_load_kwh_per_day,
-            limits(answer.base_load_95, 1)
-        ),
-        format!(
-            "Fit               r² {:.3}, CV(RMSE) {:.1} %",
-            answer.r_squared,
-            answer.cv_rmse * 100.0
-        ),
     ];
+    match &answer.own_home {
+        Some(own) => {
+            lines.push(format!(
+                "Base load         {:>7.1} kWh a day {}",
+                own.base_load_kwh_per_day,
+                limits(own.base_load_95, 1)
+            ));
+            lines.push(format!(
+                "Rooms             {:>+7.1} K         {} against the brief; or other gains that do the same",
+                own.warmer_k,
+                limits(own.warmer_95, 1)
+            ));
+            if own.knows_sun {
+                lines.push(format!(
+                    "Sun               {:>7.2} times    {} of the brief's",
+                    own.sun,
+                    limits(own.sun_95, 2)
+                ));
+            }
+            lines.push(format!(
+                "Fit               CV(RMSE) {:.1} %",
+                own.cv_rmse * 100.0
+            ));
+            lines.push(String::new());
+            lines.push("A straight line through the same readings".to_owned());
+            lines.push(format!(
+                "  Effective       {:>7.0} W/K       {}",
+                answer.effective_w_per_k,
+                limits(answer.effective_95, 0)
+            ));
+        }
+        None => lines.push(String::new()),
+    }
+    lines.push(format!(
+        "  Base temperature{:>7.1} °C        {}{}",
+        answer.base_temperature_c,
+        limits(answer.base_temperature_95, 1),
+        if answer.base_temperature_fitted {
+            ""
+        } else {
+            ", of published homes: too few readings to fit it"
+        }
+    ));
+    lines.push(format!(
+        "  Base load       {:>7.1} kWh a day {}",
+        answer.base_load_kwh_per_day,
+        limits(answer.base_load_95, 1)
+    ));
+    lines.push(format!(
+        "  Fit             r² {:.3}, CV(RMSE) {:.1} %",
+        answer.r_squared,
+        answer.cv_rmse * 100.0
+    ));
     if let Some(survey) = answer.survey_w_per_k {
         lines.push(format!(
             "Survey            {survey:>7.0} W/K       the brief's own, used for sizing"
         ));
     }
     lines.push(String::new());
-    lines.push("  from        to          outdoors  kWh a day  by the fit".to_owned());
+    let own = answer.own_home.is_some();
+    lines.push(format!(
+        "  from        to          outdoors  kWh a day  by the line{}",
+        if own { "  by the home" } else { "" }
+    ));
     for interval in &answer.intervals {
         lines.push(format!(
-            "  {}  {}  {:>5.1} °C  {:>9.1}  {:>10.1}{}",
+            "  {}  {}  {:>5.1} °C  {:>9.1}  {:>11.1}{}{}",
             interval.from,
             interval.to,
             interval.outdoor_c,
             interval.kwh_per_day,
             interval.fitted_kwh_per_day,
+            interval
+                .model_kwh_per_day
+                .map_or_else(String::new, |kwh| format!("{kwh:>13.1}")),
             if interval.odd { "  odd" } else { "" }
         ));
     }
@@ -149,6 +192,18 @@ fn text(answer: &BillsAnswer) -> String {
         ));
     }
     lines.push(String::new());
+    lines.push(
+        if knows_sun {
+            "The heat loss is that at which the home of the brief, run hour by hour with its set points, storage, gains, sun and \
+             boiler,\nuses what was metered. Readings cannot tell a loss from an efficiency, nor a set point from internal gains: \
+             the limits hold\nwhat may be wrong with them."
+        } else {
+            "This is an effective coefficient, not the heat-loss coefficient: the sun is not known here, and sunless months are \
+             cold\nmonths, so it holds how the sun goes with the cold and is larger. Weather with radiation and a floor area \
+             part the two."
+        }
+        .to_owned(),
+    );
     lines.push(
         "Readings hold cold rooms and hours without heating: a figure to set beside a survey, never to size with\nalone. \
          Size from a room-by-room heat-loss calculation by a competent person."

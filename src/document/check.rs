@@ -20,6 +20,11 @@ impl Check {
         Self { source, problems }
     }
 
+    /// A check of the same text whose problems are its own, for what is only tried.
+    pub fn aside(&self) -> Self {
+        Self::new(self.source.clone(), Problems::new())
+    }
+
     /// The text that is being checked.
     pub fn source(&self) -> &Source {
         &self.source

@@ -1,6 +1,7 @@
 //! What goes up the flue: the combustion balance of a fuel, with condensation.
 
-use crate::air::{SEA_LEVEL_PA, saturation_pressure_pa};
+use crate::air::{SEA_LEVEL_PA, tabulated_saturation_pressure_pa};
+use crate::extremes::lesser;
 
 /// Heat of condensation of water at 25 °C, kJ/mol (NIST).
 const LATENT_KJ_PER_MOL: f64 = 43.99;
@@ -54,14 +55,16 @@ impl Combustion {
     pub fn gross_efficiency(&self, flue_c: f64) -> f64 {
         let (dry_mol, dry_kj_per_k) = self.dry_gas();
         let water_mol = self.hydrogen / 2.0;
+        let saturation_pa = tabulated_saturation_pressure_pa(flue_c);
         // Outside the range of the saturation curve nothing condenses.
-        let steam_mol = saturation_pressure_pa(flue_c).map_or(water_mol, |saturation_pa| {
-            if saturation_pa < SEA_LEVEL_PA {
-                (dry_mol * saturation_pa / (SEA_LEVEL_PA - saturation_pa)).min(water_mol)
-            } else {
-                water_mol
-            }
-        });
+        let steam_mol = if saturation_pa < SEA_LEVEL_PA {
+            lesser(
+                dry_mol * saturation_pa / (SEA_LEVEL_PA - saturation_pa),
+                water_mol,
+            )
+        } else {
+            water_mol
+        };
         let warmer_k = flue_c - REFERENCE_C;
         let sensible_kj =
             warmer_k * (dry_kj_per_k + steam_mol * STEAM + (water_mol - steam_mol) * WATER);

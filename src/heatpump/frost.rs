@@ -6,6 +6,7 @@
 //! contain defrost, scales both losses.
 
 use crate::air::{MoistAir, SEA_LEVEL_PA, humidity_ratio_at_station, humidity_ratio_over_ice};
+use crate::extremes::lesser;
 
 /// Heat of sublimation of ice at 0 °C, kJ/kg (handbook value 2834).
 pub const SUBLIMATION_KJ_PER_KG: f64 = 2834.0;
@@ -22,6 +23,8 @@ pub const FULL_GROWTH_C: f64 = -4.0;
 pub const OUTPUT_OVER_COP: f64 = 0.100 / 0.086;
 /// Largest loss of COP, a share: a coil that frosts faster than this defrosts out of turn.
 pub const GREATEST_LOSS: f64 = 0.35;
+/// Share of the output that any frost leaves.
+pub(super) const LEAST_LEFT: f64 = 1.0 - GREATEST_LOSS * OUTPUT_OVER_COP;
 /// Wet-bulb depression of the standard rating conditions of outdoor air, K: 7(6), 2(1), −7(−8) °C dry (wet) bulb (EN 14511).
 /// It stands in where the weather has no humidity.
 const STANDARD_DEPRESSION_K: f64 = 1.0;
@@ -103,7 +106,7 @@ impl Frost {
             outdoor_c - surface_c,
             humidity_ratio - surface_humidity_ratio,
         );
-        let cop = (self.strength * frosted_share * latent_share).min(GREATEST_LOSS);
+        let cop = lesser(self.strength * frosted_share * latent_share, GREATEST_LOSS);
         FrostSteps {
             surface_c,
             surface_humidity_ratio,

@@ -231,24 +231,8 @@ impl Emitters {
     /// A flow hotter than needed is throttled by the room valves: the same mean water, a cooler return. A cooler flow carries
     /// less heat.
     pub fn supply(&self, heat_kw: f64, room_c: f64, outdoor_c: f64) -> Supply {
-        let needed = self.at_load(heat_kw, room_c);
-        let spread_k = needed.flow_c - needed.return_c;
         match self.control.flow_c(outdoor_c) {
-            None => Supply {
-                heat_kw,
-                water: needed,
-                spread_k,
-            },
-            Some(flow_c) if flow_c >= needed.flow_c => {
-                let return_c = (2.0 * needed.mean_c() - flow_c).max(room_c.min(needed.return_c));
-                Supply {
-                    heat_kw,
-                    water: WaterTemperatures { flow_c, return_c },
-                    spread_k,
-                }
-            }
-            Some(flow_c) => {
-                let heat_kw = self.output_kw(flow_c, room_c);
+            None => {
                 let water = self.at_load(heat_kw, room_c);
                 Supply {
                     heat_kw,
@@ -256,6 +240,27 @@ impl Emitters {
                     spread_k: water.flow_c - water.return_c,
                 }
             }
+            Some(flow_c) => self.supply_at(heat_kw, room_c, flow_c),
+        }
+    }
+
+    /// What they carry of a heat (kW) at a flow temperature, into rooms at a temperature (°C).
+    pub fn supply_at(&self, heat_kw: f64, room_c: f64, flow_c: f64) -> Supply {
+        let needed = self.at_load(heat_kw, room_c);
+        if flow_c >= needed.flow_c {
+            let return_c = (2.0 * needed.mean_c() - flow_c).max(room_c.min(needed.return_c));
+            return Supply {
+                heat_kw,
+                water: WaterTemperatures { flow_c, return_c },
+                spread_k: needed.flow_c - needed.return_c,
+            };
+        }
+        let heat_kw = self.output_kw(flow_c, room_c);
+        let water = self.at_load(heat_kw, room_c);
+        Supply {
+            heat_kw,
+            water,
+            spread_k: water.flow_c - water.return_c,
         }
     }
 

@@ -1,5 +1,7 @@
 //! One room of one heat capacity: the heat an hour needs, and the temperature it leaves behind.
 
+use crate::extremes::{greater, lesser};
+
 /// Specific heat capacity of a building by construction, ISO 13790:2008 table 12 (values from memory).
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Construction {
@@ -194,7 +196,10 @@ impl Fabric {
 
     fn heat_kw(&self, left: f64, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
         let settles_c = self.heads_for_c(left, room_c, target_c);
-        (self.heat_loss_kw_per_k * (settles_c - outdoor_c) - gains_kw).max(0.0)
+        greater(
+            self.heat_loss_kw_per_k * (settles_c - outdoor_c) - gains_kw,
+            0.0,
+        )
     }
 
     /// Temperature the room heads for when a share `left` of its distance is left at the target, °C.
@@ -236,11 +241,8 @@ impl Fabric {
         let settles_c = outdoor_c + (heat_kwh + gains_kw) / self.heat_loss_kw_per_k;
         let free_c = settles_c + (room_c - settles_c) * self.left_after_hour;
         // Opening windows holds the room at the airing limit, unless it is warmer outside still.
-        let end_c = free_c.min(
-            (set_point_c + self.airing_k)
-                .max(outdoor_c)
-                .max(room_c.min(free_c)),
-        );
+        let aired_above_c = greater(set_point_c + self.airing_k, outdoor_c);
+        let end_c = lesser(free_c, greater(aired_above_c, lesser(room_c, free_c)));
         let stored_kwh = self.capacity_kwh_per_k * (end_c - room_c);
         let free_loss_kwh = heat_kwh + gains_kw - self.capacity_kwh_per_k * (free_c - room_c);
         // What is left of heat and gains after loss and storage, written so that an hour without airing holds a plain 0.

@@ -4,6 +4,7 @@ use chrono::{Datelike, Weekday};
 
 use super::WATER_KWH_PER_L_K;
 use crate::calendar::CivilHour;
+use crate::extremes::{greater, lesser};
 
 /// Clock hours, hour `h` as bit `h`.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -178,7 +179,7 @@ impl Store {
     pub fn step(&self, state: &StoreState, tapped: &Tapped, clock: &CivilHour) -> StoreStep {
         let lost_kwh = self.loss_kw_per_k * (state.mean_c - self.surroundings_c);
         let held_kwh = self.capacity_kwh_per_k * (state.mean_c - tapped.cold_c) - lost_kwh;
-        let drawn_kwh = tapped.kwh.min(held_kwh.max(0.0));
+        let drawn_kwh = lesser(tapped.kwh, greater(held_kwh, 0.0));
         let before_c = state.mean_c - (drawn_kwh + lost_kwh) / self.capacity_kwh_per_k;
         let spent_c = tapped.cold_c + (1.0 - self.usable) * (self.set_point_c - tapped.cold_c);
         let too_cool = tapped.kwh > 0.0
@@ -206,7 +207,7 @@ impl Store {
             || state.charging && may_start
             || may_start && before_c < self.set_point_c - start_k;
         let wanted_kwh = if due {
-            (target_c - before_c).max(0.0) * self.capacity_kwh_per_k
+            greater(target_c - before_c, 0.0) * self.capacity_kwh_per_k
         } else {
             0.0
         };

@@ -75,24 +75,17 @@ fn best(metered: &[Metered<'_>], swing: f64) -> Result<Line, FitProblem> {
     line(metered, base_c, swing).ok_or(FitProblem::NotConverged)
 }
 
-/// Fits the signature of intervals over the weather of the same days.
-///
-/// Intervals are weighted by their days. Limits of 95 % combine the fit (Student's t) with what is stated about efficiency
-/// and hot water, as independent. With four or five intervals the base temperature is that of published homes.
-///
-/// # Errors
-/// [`FitProblem`].
-pub fn fit(
+/// The intervals over the days of the weather.
+pub(super) fn metered<'a>(
     intervals: &[Interval],
-    weather: &DailyWeather,
-    stated: &Stated,
-) -> Result<Signature, FitProblem> {
+    weather: &'a DailyWeather,
+) -> Result<Vec<Metered<'a>>, FitProblem> {
     if intervals.len() < LEAST_INTERVALS {
         return Err(FitProblem::TooFew {
             found: intervals.len(),
         });
     }
-    let metered = intervals
+    intervals
         .iter()
         .map(|interval| {
             let days =
@@ -105,7 +98,22 @@ pub fn fit(
                     })?;
             Ok(Metered::new(days, interval.kwh / days.len() as f64))
         })
-        .collect::<Result<Vec<_>, FitProblem>>()?;
+        .collect()
+}
+
+/// Fits the signature of intervals over the weather of the same days.
+///
+/// Intervals are weighted by their days. Limits of 95 % combine the fit (Student's t) with what is stated about efficiency
+/// and hot water, as independent. With four or five intervals the base temperature is that of published homes.
+///
+/// # Errors
+/// [`FitProblem`].
+pub fn fit(
+    intervals: &[Interval],
+    weather: &DailyWeather,
+    stated: &Stated,
+) -> Result<Signature, FitProblem> {
+    let metered = metered(intervals, weather)?;
     let fitted = metered.len() >= LEAST_FOR_BASE;
     let solve = |share: f64, base_c: f64| -> Result<Line, FitProblem> {
         let swing = share * stated.hot_water_swing;
@@ -204,6 +212,7 @@ pub fn fit(
         },
         cv_rmse: (variance / mean_weight).sqrt() / mean,
         points,
+        own_home: None,
         swing,
         covariance,
         t,
@@ -284,7 +293,7 @@ fn points(
 }
 
 /// Quantile of Student's t with `freedom` > 0 degrees of freedom.
-fn quantile(freedom: f64, probability: f64) -> f64 {
+pub(super) fn quantile(freedom: f64, probability: f64) -> f64 {
     StudentsT::new(0.0, 1.0, freedom).map_or(f64::INFINITY, |t| t.inverse_cdf(probability))
 }
 

@@ -3,6 +3,7 @@
 use chrono::NaiveDate;
 
 use super::days::Day;
+use super::own_home::OwnHome;
 use super::model::{Metered, quadratic};
 
 /// What is stated about a heater and the load without heating.
@@ -65,10 +66,11 @@ pub struct Point {
     pub odd: bool,
 }
 
-/// The signature of a home.
+/// The signature of a home: a straight line, and beside it what the home's own model makes of the readings.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Signature {
-    /// Heat-loss coefficient, W/K; its limits hold the efficiency and the hot water too.
+    /// Slope as an effective coefficient, W/K: it holds how the sun goes with the cold. Its limits hold the efficiency and the hot
+    /// water too.
     pub heat_loss_w_per_k: Limits,
     /// Outdoor temperature below which it is heated, °C.
     pub base_temperature_c: Limits,
@@ -84,6 +86,8 @@ pub struct Signature {
     pub cv_rmse: f64,
     /// Every interval.
     pub points: Vec<Point>,
+    /// The heat loss at which the home's own model uses what was metered, where the home is described.
+    pub own_home: Option<OwnHome>,
     pub(super) swing: f64,
     pub(super) covariance: [[f64; 3]; 3],
     pub(super) t: f64,
@@ -118,6 +122,13 @@ pub enum FitProblem {
 }
 
 impl Signature {
+    /// The heat-loss coefficient of the home's own model, else the effective one of the line, W/K.
+    pub fn heat_loss(&self) -> Limits {
+        self.own_home
+            .as_ref()
+            .map_or(self.heat_loss_w_per_k, |own| own.heat_loss_w_per_k)
+    }
+
     /// How many intervals it was made of.
     pub fn n(&self) -> usize {
         self.points.len()

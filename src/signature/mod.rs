@@ -7,10 +7,12 @@ mod days;
 mod fit;
 mod found;
 mod model;
+mod own_home;
 mod readings;
 mod rows;
 
 pub use days::{DailyWeather, Day};
 pub use fit::fit;
 pub use found::{FitProblem, Limits, Point, Signature, Stated};
+pub use own_home::{Doubt, OwnHome, Tried, fit_own_home};
 pub use readings::{Conversion, Interval, Readings};

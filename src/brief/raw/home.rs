@@ -117,6 +117,10 @@ pub(in crate::brief) struct BillsTable {
     pub hot_water_share: Option<Leaf<Share>>,
     /// That part is within this many percentage points, with 95 % confidence.
     pub hot_water_share_within: Option<Leaf<Share>>,
+    /// Set point and internal gains together are within this many kelvins of the set point, with 95 % confidence.
+    pub indoor_within: Option<Leaf<TemperatureDifference>>,
+    /// The solar gains are within this share, with 95 % confidence.
+    pub sun_within: Option<Leaf<Share>>,
     /// Scale the heat loss of every system so that today's fuel is what was metered.
     pub scale: Option<Leaf<bool>>,
 }

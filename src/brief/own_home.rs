@@ -1,0 +1,222 @@
+//! Today's home as a model that is run over the days of the meter readings.
+
+use super::bills::{BillsMade, Over};
+use super::boiler::boiler;
+use super::defaults;
+use super::fabric::{Gains, Storage, fabric_parts};
+use super::home::{WeatherFacts, warm_side};
+use super::notes::Notes;
+use super::raw::SystemTable;
+use super::site::Used;
+use crate::document::{Check, Section};
+use crate::home::Fabric;
+use crate::plan::{Ability, following};
+use crate::signature::{Interval, Tried};
+use crate::source::Memory;
+use crate::study::design_point;
+use crate::units::{TemperatureDifference, parse};
+use crate::weather::Weather;
+use crate::year::{Heating, Plan, Row, Signal, Sink, Site, State, System, run};
+
+/// More than any home asks for, kW: what stands for a heater whose efficiency is stated.
+const AMPLE_KW: f64 = 1000.0;
+
+/// Today's home over the weather of the readings.
+pub(super) struct OwnHomeModel {
+    site: Site,
+    system: System,
+    plan: Plan,
+    indoor_c: f64,
+    /// The interval that each hour of the axis lies in.
+    interval_of: Vec<Option<usize>>,
+    intervals: usize,
+    /// Whether the gains are what a base temperature leaves, and so follow the heat loss.
+    gains_follow_loss: bool,
+    /// Whether the storage is a time constant, and so follows the heat loss.
+    storage_follows_loss: bool,
+}
+
+/// Heat and fuel for the rooms in each interval, kWh.
+struct Heated {
+    heat_kwh: Vec<f64>,
+    fuel_kwh: Vec<f64>,
+}
+
+/// Adds the hours of each interval.
+struct ByInterval<'a> {
+    interval_of: &'a [Option<usize>],
+    used: Heated,
+}
+
+impl Sink for ByInterval<'_> {
+    fn take(&mut self, hour: usize, row: &Row) {
+        if let Some(interval) = self.interval_of.get(hour).copied().flatten() {
+            self.used.heat_kwh[interval] += row.space_heat_kwh();
+            self.used.fuel_kwh[interval] += row.fuel_kwh;
+        }
+    }
+}
+
+impl OwnHomeModel {
+    /// Today's home with the heat loss that the readings showed so far; nothing when the brief does not describe a home that can
+    /// be run, which is told where its tables are read for themselves.
+    pub fn new(
+        over: &Over<'_>,
+        weather: &Weather,
+        so_far: &BillsMade,
+        intervals: &[Interval],
+        check: &Check,
+    ) -> Option<Self> {
+        let (home, today) = (over.home?, over.today?);
+        let (mut check, mut notes) = (check.aside(), Notes::default());
+        let facts = WeatherFacts {
+            has_radiation: over.facts.has_radiation,
+            ..*over.facts
+        };
+        let parts = fabric_parts(home, &facts, &mut check, &mut notes)?;
+        let kind = check.value(&today.kind)?.0;
+        let warm = warm_side(
+            home,
+            today,
+            Some(kind),
+            &facts,
+            Some(so_far),
+            &mut check,
+            &mut notes,
+        )?;
+        let heating = match kind.burns() {
+            Some(fuel) if !over.states_efficiency() => {
+                let (boiler, fixed_flow_c) = boiler(today, fuel, &mut check, &mut notes)?;
+                Heating::Boiler {
+                    boiler,
+                    fixed_flow_c,
+                }
+            }
+            _ => Heating::DirectElectric {
+                output_kw: AMPLE_KW,
+            },
+        };
+        if !check.problems().is_empty()
+            || (warm.home.fabric.solar_aperture_m2() > 0.0 && weather.global_w_per_m2.is_none())
+        {
+            return None;
+        }
+        let system = System {
+            label: String::new(),
+            home: crate::home::Home {
+                // Hot water is the load beside heating, which the readings show for themselves.
+                hot_water: None,
+                ..warm.home
+            },
+            heating,
+        };
+        let site = Used {
+            weather: weather.clone(),
+            findings: Vec::new(),
+        }
+        .into_site(over.zone);
+        let design = design_point(
+            &system,
+            warm.indoor_c,
+            warm.design_outdoor_c,
+            warm.design_load_kw,
+            Memory::default(),
+        );
+        let ability = Ability {
+            output_kw: design.carried_kw(),
+            backup_band_k: parse::<TemperatureDifference>(defaults::BACKUP_BAND.value)
+                .ok()?
+                .k(),
+        };
+        let nothing = vec![0.0; site.civil.len()];
+        let signal = Signal::bought(nothing.clone(), nothing);
+        let plan = following(&warm.pattern, &site.civil, ability, signal, None);
+        let interval_of = site
+            .civil
+            .iter()
+            .map(|hour| {
+                intervals
+                    .iter()
+                    .position(|interval| (interval.from..interval.to).contains(&hour.date))
+            })
+            .collect();
+        Some(Self {
+            site,
+            system,
+            plan,
+            indoor_c: warm.indoor_c,
+            interval_of,
+            intervals: intervals.len(),
+            gains_follow_loss: matches!(parts.gains, Gains::UpTo { .. }),
+            storage_follows_loss: matches!(parts.storage, Storage::TimeConstant(_)),
+        })
+    }
+
+    /// Whether today's boiler is part of it; else the heat is all it knows.
+    pub fn burns(&self) -> bool {
+        self.system.heating.boiler().is_some()
+    }
+
+    /// Whether the sun is part of it.
+    pub fn knows_sun(&self) -> bool {
+        self.system.home.fabric.solar_aperture_m2() > 0.0
+    }
+
+    /// Whether its gains are what a base temperature says.
+    pub fn has_base_temperature(&self) -> bool {
+        self.gains_follow_loss
+    }
+
+    /// Heat over fuel of the rooms with a heat loss (W/K); nothing where no fuel is burnt.
+    pub fn efficiency(&self, heat_loss_w_per_k: f64) -> Option<f64> {
+        let used = self.run(&Tried {
+            heat_loss_w_per_k,
+            warmer_k: 0.0,
+            sun: 1.0,
+        });
+        let fuel_kwh: f64 = used.fuel_kwh.iter().sum();
+        (fuel_kwh > 0.0).then(|| used.heat_kwh.iter().sum::<f64>() / fuel_kwh)
+    }
+
+    /// Fuel for heating in each interval, kWh, at the efficiency of today's boiler, else at a stated one.
+    pub fn heating_kwh(&self, tried: &Tried, efficiency: f64) -> Vec<f64> {
+        let used = self.run(tried);
+        if self.burns() {
+            used.fuel_kwh
+        } else {
+            used.heat_kwh.iter().map(|kwh| kwh / efficiency).collect()
+        }
+    }
+
+    fn run(&self, tried: &Tried) -> Heated {
+        let own = &self.system.home.fabric;
+        let loss = tried.heat_loss_w_per_k;
+        let multiple = loss / own.heat_loss_w_per_k();
+        let follows = |does: bool| if does { multiple } else { 1.0 };
+        let mut system = self.system.clone();
+        system.home.fabric = Fabric::new(
+            loss,
+            own.capacity_kwh_per_k() * follows(self.storage_follows_loss),
+            // Rooms that are warmer lose more: as if the gains were smaller by that.
+            own.internal_gains_kw() * follows(self.gains_follow_loss)
+                - loss * tried.warmer_k / 1000.0,
+            own.solar_aperture_m2() * tried.sun,
+        );
+        let mut sink = ByInterval {
+            interval_of: &self.interval_of,
+            used: Heated {
+                heat_kwh: vec![0.0; self.intervals],
+                fuel_kwh: vec![0.0; self.intervals],
+            },
+        };
+        let mut state = State::at_rest(&system, self.indoor_c);
+        let hours = 0..self.site.civil.len();
+        run(
+            &self.site, &system, &self.plan, hours, &mut state, &mut sink,
+        );
+        sink.used
+    }
+}
+
+/// Today's table where a brief has one.
+pub(super) type Today<'a> = Option<&'a Section<SystemTable>>;
