@@ -16,7 +16,8 @@ use crate::bounds;
 use crate::document::{Check, Document, Leaf, Section, read_text};
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
 use crate::signature::{
-    Conversion, DailyWeather, Doubt, FitProblem, Interval, Readings, Signature, Stated, fit, fit_own_home,
+    Conversion, DailyWeather, Doubt, FitProblem, Interval, Readings, Signature, Stated, fit,
+    fit_own_home,
 };
 use crate::units::{CalorificValue, Fuel, Temperature, parse};
 use crate::weather::{ReadOptions, Weather, read_bytes};
@@ -166,7 +167,11 @@ fn through_own_home(
     notes: &mut Notes,
 ) -> Result<(), FitProblem> {
     const ROUNDS: usize = 2;
-    let rounds = if made.survey_w_per_k.is_some() { 1 } else { ROUNDS };
+    let rounds = if made.survey_w_per_k.is_some() {
+        1
+    } else {
+        ROUNDS
+    };
     let mut stated = within.stated;
     for round in 1..=rounds {
         let Some(model) = OwnHomeModel::new(over, weather, made, within.intervals, check) else {
@@ -228,17 +233,24 @@ struct DoubtOf {
     sun: f64,
 }
 
-fn doubt(
-    table: Option<&Section<raw::BillsTable>>,
-    check: &mut Check,
-) -> Option<DoubtOf> {
+fn doubt(table: Option<&Section<raw::BillsTable>>, check: &mut Check) -> Option<DoubtOf> {
     // What is used of these is noted once it is known which of them the home has.
     let mut aside = Notes::default();
     let (no_k, no_share) = (None, None);
     let indoor = table.map_or(&no_k, |table| &table.indoor_within);
     let sun = table.map_or(&no_share, |table| &table.sun_within);
-    let warmer = aside.quantity(check, indoor, &bounds::INDOOR_WITHIN_K, &defaults::INDOOR_WITHIN)?;
-    let base = aside.quantity(check, indoor, &bounds::INDOOR_WITHIN_K, &defaults::BASE_WITHIN)?;
+    let warmer = aside.quantity(
+        check,
+        indoor,
+        &bounds::INDOOR_WITHIN_K,
+        &defaults::INDOOR_WITHIN,
+    )?;
+    let base = aside.quantity(
+        check,
+        indoor,
+        &bounds::INDOOR_WITHIN_K,
+        &defaults::BASE_WITHIN,
+    )?;
     let sun = aside.quantity(check, sun, &bounds::SHARE, &defaults::SUN_WITHIN)?;
     Some(DoubtOf {
         warmer_k: warmer.k(),

@@ -94,7 +94,11 @@ fn text(answer: &BillsAnswer) -> String {
     let limits =
         |pair: [f64; 2], places: usize| format!("{:.places$} to {:.places$}", pair[0], pair[1]);
     let knows_sun = answer.own_home.as_ref().is_some_and(|own| own.knows_sun);
-    let name = if knows_sun { "Heat loss" } else { "Effective loss" };
+    let name = if knows_sun {
+        "Heat loss"
+    } else {
+        "Effective loss"
+    };
     let mut lines = vec![
         format!("{}: {} intervals", answer.file, answer.n),
         String::new(),

@@ -137,10 +137,7 @@ pub fn fit_own_home(
         let mut data = Matrix::zeros();
         let mut pull = Vector::zeros();
         let mut squares = 0.0;
-        for (one, (fitted, row)) in metered
-            .iter()
-            .zip(looked.fitted.iter().zip(&looked.rows))
-        {
+        for (one, (fitted, row)) in metered.iter().zip(looked.fitted.iter().zip(&looked.rows)) {
             let residual = one.kwh_per_day - fitted;
             data += row * row.transpose() * (one.weight() / variance);
             pull += row * (one.weight() / variance * residual);
@@ -152,7 +149,9 @@ pub fn fit_own_home(
             pull[k] += precision[k] * (prior[k] - at[k]);
         }
         // Scaled to ones on its diagonal, so that watts and shares do not meet.
-        let scale = normal.diagonal().map(|entry| entry.max(f64::MIN_POSITIVE).sqrt().recip());
+        let scale = normal
+            .diagonal()
+            .map(|entry| entry.max(f64::MIN_POSITIVE).sqrt().recip());
         let scaled = Matrix::from_fn(|r, c| normal[(r, c)] * scale[r] * scale[c]);
         let inverse = scaled.try_inverse().ok_or(FitProblem::NoHeating)?;
         let covariance = Matrix::from_fn(|r, c| inverse[(r, c)] * scale[r] * scale[c]);
@@ -257,7 +256,9 @@ fn look(
         if is_free(SHARE) {
             row[SHARE] = at[BASE] * swing * one.season;
         }
-        looked.fitted.push(at[BASE] * shape + heating[i] / efficiency);
+        looked
+            .fitted
+            .push(at[BASE] * shape + heating[i] / efficiency);
         looked.rows.push(row);
     }
     looked
