@@ -36,6 +36,7 @@ mod numbers;
 mod paint;
 mod palette;
 mod ramp;
+mod rows;
 mod scene;
 
 mod annual_cost;

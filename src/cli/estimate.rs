@@ -66,7 +66,7 @@ pub struct Args {
     /// Also run every system all day at its set point beside a set-back.
     #[arg(long)]
     patterns: bool,
-    /// Samples for the odds of every choice, in blocks of 20; 0 leaves them out. `odds` draws more and says what to find out.
+    /// Samples for the odds of every choice, in blocks of 5; 0 leaves them out. `odds` draws more and says what to find out.
     #[arg(long, default_value_t = 80, value_parser = clap::value_parser!(u32).range(0..=100_000))]
     samples: u32,
     /// Run weather of less than a year all the same: figures of these days, with no word of a year; DIR then gets ledgers and
@@ -165,7 +165,7 @@ type Sampled = (Sampler, Vec<Vec<Sample>>);
 /// A modest sample for the odds of every choice; nothing where none was wished for.
 fn sampled(brief: &Brief, samples: usize) -> Result<Option<Sampled>, Problems> {
     /// Samples of a block.
-    const BLOCK: usize = 20;
+    const BLOCK: usize = 5;
     /// The same seed as that of `odds`; the same estimate gives the same bytes.
     const SEED: u64 = 1;
     if samples == 0 || brief.case.contenders.len() < 2 {

@@ -2,19 +2,16 @@
 
 use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
-use crate::answer::odds::OddsAnswer;
+use crate::answer::odds::{Matters, OddsAnswer};
 use crate::answer::short;
 use crate::locale::Marks;
+
+/// Share of the spread from which a lever has a line of its own: below it rounds to 0 %.
+const SAID: f64 = 0.005;
 
 /// The odds as text for a terminal of 80 columns or more, with the marks of a place.
 pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     let whole = |value: f64| marks.number(value, 0);
-    let error = |error: Option<f64>| {
-        // A whole percent: the error of an error is large.
-        error.map_or_else(String::new, |error| {
-            format!(" ± {}", whole((error * 100.0).max(1.0)))
-        })
-    };
     let mut blocks: Vec<String> = vec![
         answer
             .choices
@@ -37,11 +34,7 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
                 || "–".to_owned(),
                 |spf| format!("{}–{}", marks.number(spf.p10, 1), marks.number(spf.p90, 1)),
             ),
-            format!(
-                "{:.0}{}",
-                choice.chance_cheaper * 100.0,
-                error(choice.chance_error)
-            ),
+            choice.chance_said.clone(),
         ]
     });
     let header = [
@@ -54,7 +47,11 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     ];
     blocks.push(plain_table_within(WIDTH, header, rows));
     if !answer.what_matters.is_empty() {
-        let lines = answer.what_matters.iter().map(|one| {
+        let (told, hardly): (Vec<&Matters>, Vec<&Matters>) = answer
+            .what_matters
+            .iter()
+            .partition(|one| one.share >= SAID);
+        let lines = told.iter().map(|one| {
             let turns = one.turns_with.as_ref().map_or_else(
                 || "does not turn the answer".to_owned(),
                 |with| format!("turns with {}", marks.localized(with)),
@@ -78,7 +75,12 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
             );
             wrapped(&line, "  ", "      ")
         });
-        let lines: Vec<_> = lines.collect();
+        let mut lines: Vec<_> = lines.collect();
+        if !hardly.is_empty() {
+            let names: Vec<&str> = hardly.iter().map(|one| one.lever.as_str()).collect();
+            let line = format!("hardly any of it: {}", names.join(", "));
+            lines.push(wrapped(&line, "  ", "      "));
+        }
         blocks.push(format!(
             "What makes the spread of \"{}\"\n{}",
             answer.about,
@@ -87,12 +89,9 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     }
     if !answer.between.is_empty() {
         let lines = answer.between.iter().map(|pair| {
-            let error = error(pair.chance_error);
             let line = format!(
-                "\"{}\" is cheaper than \"{}\" in {:.0}{error} of 100",
-                pair.label,
-                pair.than,
-                pair.chance_cheaper * 100.0
+                "\"{}\" is cheaper than \"{}\" in {} of 100",
+                pair.label, pair.than, pair.chance_said
             );
             wrapped(&line, "", "  ")
         });

@@ -1,7 +1,7 @@
 //! The pictures of the odds, and every sample as a row.
 
 use super::pictures::{Drawn, drawn};
-use crate::answer::odds::OddsAnswer;
+use crate::answer::odds::{OddsAnswer, chance_said};
 use crate::chart::{
     ChartError, ChoiceSaving, CostOdds, CostSpread, SavingOdds, SpreadShares, UnknownShare,
     cost_odds, saving_odds, spread_shares,
@@ -34,9 +34,7 @@ pub fn odds_pictures(
         ChoiceSaving {
             label: contender.system.label.clone(),
             saving: saving.concat(),
-            chance_error: chance
-                .map(|chance| chance.error)
-                .filter(|error| error.is_finite()),
+            chance: chance.as_ref().map(chance_said),
         }
     });
     let saving = SavingOdds {

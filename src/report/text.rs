@@ -79,14 +79,10 @@ fn odds_in_brief(odds: &OddsSummary) -> String {
     );
     let mut lines = vec![wrapped(&heading, "", "  ")];
     for choice in &odds.choices {
-        let error = choice.chance_error.map_or_else(String::new, |error| {
-            // A whole percent: the error of an error is large.
-            format!(" ± {:.0}", (error * 100.0).max(1.0))
-        });
         let said = format!(
-            "{} Chance {:.0}{error} %. {}",
+            "{} Chance {} %. {}",
             choice.sentence,
-            choice.chance_cheaper * 100.0,
+            choice.chance_said,
             choice.depends_on.as_deref().unwrap_or_default()
         );
         lines.push(wrapped(said.trim_end(), "", "  "));

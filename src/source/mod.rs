@@ -21,7 +21,7 @@ mod trench;
 mod undisturbed;
 mod water;
 
-pub use borehole::UTube;
+pub use borehole::{UTube, UTubes};
 pub use bores::{Bore, total_depth_m};
 pub use brine::{Antifreeze, Brine, BrineProperties, GREATEST_SHARE};
 pub use buried::{BuriedLoop, RECHARGE_DAYS};

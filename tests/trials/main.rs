@@ -285,7 +285,7 @@ fn ground_source_in_the_place_of_the_trial() {
 /// stand beside each other as that trial saw them. The middle half by the same −10 and +11 %: 2.20 to 2.71 at H4. Written down and
 /// committed before it was run: the semi-detached home, and a machine of one speed as above.
 ///
-/// Run: H4 2.15, missed by 2 %. The walk tells where to look: going on and off takes a quarter of it. Most of that is the coefficient 0.9
+/// Run: H4 2.15, missed by 2 %. The walk tells where to look: going on and off takes a fifth of the figure. Most of that is the coefficient 0.9
 /// that EN 14825 takes where none was measured. The same home with 0.97 comes to 2.35, and to 2.73 with the ground source of one speed;
 /// cycling costs 2 to 5 % at very short cycles (published tests). Not changed for this: it is the sheet's to say.
 #[test]

@@ -1,7 +1,7 @@
 //! From whole blocks of samples to the odds.
 
 use super::matters::{find_out, matters};
-use super::words::{in_words, not_drawn};
+use super::words::{chance_said, in_words, not_drawn};
 use super::{Between, ChoiceOdds, OddsAnswer, QuantilesAnswer, UncertainAnswer};
 use crate::answer::comfort::leaves_cold;
 use crate::answer::lever::unit;
@@ -54,7 +54,10 @@ pub fn odds(
                     label: label(one),
                     than: label(other),
                     chance_cheaper: chance.chance,
-                    chance_error: chance.error.is_finite().then_some(chance.error),
+                    chance_error: chance.error,
+                    chance_low: chance.low,
+                    chance_high: chance.high,
+                    chance_said: chance_said(&chance),
                 });
             }
         }
@@ -229,7 +232,10 @@ fn choice(
         hours_backup: quantiles(&sampled.each(|sample| sample.systems[place].hours_backup))?,
         min_indoor_c: quantiles(&sampled.each(|sample| sample.systems[place].min_indoor_c))?,
         chance_cheaper: chance.chance,
-        chance_error: chance.error.is_finite().then_some(chance.error),
+        chance_error: chance.error,
+        chance_low: chance.low,
+        chance_high: chance.high,
+        chance_said: chance_said(&chance),
         sentence: in_words(
             (label, cold.as_deref()),
             chance.chance,

@@ -11,6 +11,7 @@ use crate::problem::Finding;
 
 pub use make::{Wish, odds};
 pub use summary::{ChoiceSummary, Important, OddsSummary, summary};
+pub use words::chance_said;
 
 /// How sure the comparison is.
 #[derive(Debug, Clone, PartialEq, Serialize)]
@@ -74,6 +75,12 @@ pub struct ChoiceOdds {
     /// Why it is no fair answer however likely it is to be cheaper; absent where rooms and water are kept warm.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub leaves_cold: Option<String>,
+    /// Limits that hold the chance in 95 cases of 100, by the samples drawn.
+    pub chance_low: f64,
+    /// The upper one.
+    pub chance_high: f64,
+    /// The chance as far as the samples tell it, %: "48 ± 4", "more than 96" where all samples agree, "32 to 64" from a single block.
+    pub chance_said: String,
     /// The same as a sentence.
     pub sentence: String,
 }
@@ -127,6 +134,12 @@ pub struct Between {
     /// Standard error of that chance; absent with a single block.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub chance_error: Option<f64>,
+    /// Limits that hold the chance in 95 cases of 100, by the samples drawn.
+    pub chance_low: f64,
+    /// The upper one.
+    pub chance_high: f64,
+    /// The chance as far as the samples tell it, %: "48 ± 4", "more than 96" where all samples agree, "32 to 64" from a single block.
+    pub chance_said: String,
 }
 
 /// What one lever does to the spread.

@@ -5,7 +5,7 @@ use serde::Serialize;
 use super::QuantilesAnswer;
 use super::make::{Sampled, quantiles};
 use super::matters::most_important;
-use super::words::{chance_in_words, in_words, is_about_the_same, not_drawn};
+use super::words::{chance_in_words, chance_said, in_words, is_about_the_same, not_drawn};
 use crate::answer::comfort::leaves_cold;
 use crate::study::odds::{Sample, Sampler};
 use crate::study::{Case, Outcome};
@@ -41,6 +41,12 @@ pub struct ChoiceSummary {
     /// Why it is no fair answer however likely it is to be cheaper; absent where rooms and water are kept warm.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub leaves_cold: Option<String>,
+    /// Limits that hold the chance in 95 cases of 100, by the samples drawn.
+    pub chance_low: f64,
+    /// The upper one.
+    pub chance_high: f64,
+    /// The chance as far as the samples tell it, %: "48 ± 4", "more than 96" where all samples agree, "32 to 64" from a single block.
+    pub chance_said: String,
     /// Today's yearly cost less its own, in the same sample.
     pub saving: QuantilesAnswer,
     /// The chance in words: "about 2 chances in 3 of being cheaper".
@@ -95,7 +101,10 @@ pub fn summary(
         Some(ChoiceSummary {
             label: label.clone(),
             chance_cheaper: chance.chance,
-            chance_error: chance.error.is_finite().then_some(chance.error),
+            chance_error: chance.error,
+            chance_low: chance.low,
+            chance_high: chance.high,
+            chance_said: chance_said(&chance),
             saving,
             chance_words: chance_in_words(chance.chance),
             about_the_same: is_about_the_same(chance.chance),

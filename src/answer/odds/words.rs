@@ -2,6 +2,7 @@
 
 use super::QuantilesAnswer;
 use crate::study::Lever;
+use crate::study::odds::Chance;
 
 /// Chances between which neither side is to be called cheaper. A choice of ours: two chances in three either way.
 const ABOUT_THE_SAME: std::ops::RangeInclusive<f64> = 0.3..=0.7;
@@ -85,6 +86,22 @@ pub(super) fn chance_in_words(chance: f64) -> String {
     format!("{said} of being cheaper")
 }
 
+/// A chance as far as the samples tell it, in percent: nothing is said to be certain, and no figure stands without how far it may be off.
+pub fn chance_said(chance: &Chance) -> String {
+    let percent = |share: f64| share * 100.0;
+    let whole = |share: f64| percent(share).round();
+    match chance.error {
+        // All agree, or nearly: the limit says more than a figure that rounds to the end.
+        _ if whole(chance.chance) >= 100.0 => {
+            format!("more than {:.0}", percent(chance.low).floor())
+        }
+        _ if whole(chance.chance) <= 0.0 => format!("less than {:.0}", percent(chance.high).ceil()),
+        // A whole percent: the error of an error is large.
+        Some(error) => format!("{:.0} ± {:.0}", whole(chance.chance), whole(error).max(1.0)),
+        None => format!("{:.0} to {:.0}", whole(chance.low), whole(chance.high)),
+    }
+}
+
 /// A lever as a family would say it.
 pub(super) fn plain(lever: Lever) -> &'static str {
     match lever {
@@ -148,6 +165,25 @@ mod tests {
             p50_error: None,
             p90_error: None,
         }
+    }
+
+    #[test]
+    fn no_chance_is_surer_than_its_samples() {
+        let said = |blocks: usize, cheaper: usize| {
+            let values: Vec<f64> = (0..80)
+                .map(|i| if i < cheaper { 1.0 } else { -1.0 })
+                .collect();
+            let blocks = values.chunks(80 / blocks);
+            chance_said(&Chance::of(blocks, |saving| saving > 0.0).unwrap())
+        };
+        // The rule of three: 3 in 80 from the end.
+        assert_eq!(said(8, 80), "more than 96");
+        assert_eq!(said(8, 0), "less than 4");
+        assert_eq!(said(1, 80), "more than 96");
+        // Half of them cheaper, all in the first blocks: √(0.25 · 8/7/8) = 0.19.
+        assert_eq!(said(8, 40), "50 ± 19");
+        // scipy.stats.beta.ppf: 0.3860 and 0.6140 of 40 in 80.
+        assert_eq!(said(1, 40), "39 to 61");
     }
 
     #[test]
