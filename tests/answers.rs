@@ -45,7 +45,7 @@ fn run(folder: &Path, arguments: &[&str]) -> (String, String) {
 }
 
 /// The report as a page; a number is held to its unit there by a space that does not break.
-fn page(folder: &Path) -> String {
+fn report(folder: &Path) -> String {
     let page = fs::read_to_string(folder.join("out/report.html")).unwrap();
     page.replace('\u{a0}', " ")
 }
@@ -118,7 +118,7 @@ fn a_cold_home_is_no_yes() {
         "the odds say it too: {text}"
     );
 
-    let page = page(at);
+    let page = report(at);
     let first = &page[page.find("id=\"answer\"").unwrap()..page.find("id=\"next\"").unwrap()];
     assert!(first.contains(why), "the first page says why");
     assert!(first.contains("is passed over"));
@@ -134,7 +134,7 @@ fn a_cold_home_is_no_yes() {
         folder.path(),
         &["estimate", "brief.toml", "--samples", "0", "--out", "out"],
     );
-    let page = page(folder.path());
+    let page = report(folder.path());
     let answer = &page[page.find("id=\"answer\"").unwrap()..];
     assert!(answer.contains(&format!("<strong>No: {why}.</strong>")));
     assert!(answer.contains("<strong>Caution: "));
@@ -158,7 +158,15 @@ fn the_next_boiler_is_told_as_it_is() {
     ]);
     let without = told(&folder);
     assert!(without.contains("is not in this") && without.contains("Give capital under [today]"));
-    let (study, _) = run(folder.path(), &["study", "brief.toml"]);
+    let (study, _) = run(
+        folder.path(),
+        &[
+            "study",
+            "brief.toml",
+            "--choice",
+            "Air source, same radiators",
+        ],
+    );
     assert!(study.contains(&without), "{study}");
     let late = told(&home(&[("due_in = \"4 years\"", "due_in = \"30 years\"")]));
     assert!(late.contains("lasts longer than the 20 years"), "{late}");
@@ -203,7 +211,7 @@ fn half_a_degree_is_not_rounded_away() {
         &["estimate", "brief.toml", "--samples", "0", "--out", "out"],
     );
     assert!(text.contains("20.5 °C all day"), "{text}");
-    let page = page(at);
+    let page = report(at);
     assert!(page.contains("set to 20.5 °C"));
     assert!(!page.contains("20 °C all day") && !page.contains("set to 20 °C"));
 }
