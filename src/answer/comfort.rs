@@ -65,11 +65,15 @@ fn lowest_asked_c(pattern: &Pattern) -> f64 {
 impl SystemAnswer {
     /// What it is called where it stands beside others: marked when it leaves rooms or water cold.
     pub fn name(&self) -> String {
-        let mark = if self.leaves_cold.is_some() {
-            " (too cold)"
-        } else {
-            ""
-        };
-        format!("{}{mark}", self.label)
+        named(&self.label, &self.leaves_cold)
     }
+}
+
+/// A label, marked when what it names leaves rooms or water cold.
+pub(super) fn named(label: &str, leaves_cold: &Option<String>) -> String {
+    let mark = match leaves_cold {
+        Some(_) => " (too cold)",
+        None => "",
+    };
+    format!("{label}{mark}")
 }

@@ -108,6 +108,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         system.ground = ground_shown(case, contender, outcome)?;
         findings.extend(shortfalls(&system));
         findings.extend(water_beyond_reach(contender, outcome));
+        findings.extend(hot_discharge(contender, outcome, &system));
         findings.extend(source_too_cold(&system));
         systems.push(system);
     }
@@ -409,6 +410,28 @@ fn source_too_cold(system: &SystemAnswer) -> Option<Finding> {
         ),
         "the loop is too short for this home and machine: see the command ground for the shortest one that would do",
     ))
+}
+
+/// A machine that the coldest hour of its source and the hottest flow asked of it would overheat.
+fn hot_discharge(
+    contender: &Contender,
+    outcome: &Outcome,
+    system: &SystemAnswer,
+) -> Option<Finding> {
+    let machine = &contender.system.heating.machine()?.machine;
+    let coldest_c = outcome
+        .years
+        .iter()
+        .map(|year| year.min_source_c)
+        .fold(f64::INFINITY, f64::min);
+    let water = contender.system.home.hot_water.as_ref();
+    let store_c = water
+        .and_then(|water| water.store)
+        .map_or(0.0, |store| store.set_point_c + store.coil_k);
+    let flow_c = system.design.heater_flow_c.max(store_c);
+    coldest_c
+        .is_finite()
+        .then(|| machine.hot_discharge(coldest_c, flow_c))?
 }
 
 /// A set point of the store that the machine cannot reach: the immersion heater lifts the rest, day after day.

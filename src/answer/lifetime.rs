@@ -2,6 +2,8 @@
 
 use serde::Serialize;
 
+use super::comfort::{leaves_cold, named};
+
 use crate::lifetime::{CashFlow, Outlay, Part, Path, Payback, payback};
 use crate::study::{Case, Outcome, cash_flow};
 
@@ -27,6 +29,9 @@ pub struct SystemLifetime {
     pub label: String,
     /// Whether it heats the home today.
     pub today: bool,
+    /// Why it is no fair answer however cheap it is; absent where rooms and water are kept warm.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub leaves_cold: Option<String>,
     /// What it is made of.
     pub parts: Vec<PartAnswer>,
     /// What is paid at the beginning, before the grant.
@@ -53,6 +58,13 @@ pub struct SystemLifetime {
     pub each_year_its_own: bool,
     /// Year 0 is today; what a year costs stands at its end.
     pub by_year: Vec<LifetimeYear>,
+}
+
+impl SystemLifetime {
+    /// What it is called where it stands beside others: marked when it leaves rooms or water cold.
+    pub fn name(&self) -> String {
+        named(&self.label, &self.leaves_cold)
+    }
 }
 
 /// One part that is bought.
@@ -104,17 +116,20 @@ pub(super) fn lifetime(case: &Case, outcomes: &[Outcome]) -> Option<LifetimeAnsw
     let systems: Vec<SystemLifetime> = case
         .contenders
         .iter()
+        .zip(outcomes)
         .zip(&flows)
-        .filter_map(|(contender, flow)| {
+        .filter_map(|((contender, outcome), flow)| {
             let flow = flow.as_ref()?;
             let outlay = contender.outlay.clone().unwrap_or_default();
-            Some(system(
+            let mut answer = system(
                 &contender.system.label,
                 &outlay,
                 flow,
                 (!contender.today).then_some(today),
                 contender.life.is_some(),
-            ))
+            );
+            answer.leaves_cold = leaves_cold(contender, outcome);
+            Some(answer)
         })
         .collect();
     (systems.len() > 1).then(|| LifetimeAnswer {
@@ -157,6 +172,7 @@ fn system(
     SystemLifetime {
         label: label.to_owned(),
         today: today.is_none(),
+        leaves_cold: None,
         parts: outlay.parts.iter().map(part).collect(),
         capital: outlay.capital(),
         grant: outlay.grant,

@@ -3,7 +3,6 @@
 use std::sync::Arc;
 
 use super::correction::{FittedMachine, GREATEST_CORRECTION};
-use super::discharge::hot_discharge;
 use super::fit::{PhysicalFit, at_point, fit_physics, named};
 use super::frost::{Frost, standard_humidity_ratio};
 use super::heat_pump::HeatPump;
@@ -152,7 +151,6 @@ pub fn fit(sheet: &Sheet) -> Result<Fitted, Problems> {
         .collect::<Result<Vec<_>, _>>()
         .map_err(unsolved)?;
     findings.extend(points.iter().filter_map(|p| finding_of(sheet, p)));
-    findings.extend(hot_discharge(sheet, &machine, &limits));
     let largest = |p: &PointReport| p.cop_percent().abs().max(p.heat_percent().abs());
     let report = FitReport {
         parameters: named(&physical)

@@ -204,9 +204,9 @@ fn own_years(system: &SystemLifetime) -> Option<String> {
 fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
     let names = lifetime.systems.iter().map(|system| {
         if system.today {
-            format!("{} (today)", system.label)
+            format!("{} (today)", system.name())
         } else {
-            system.label.clone()
+            system.name()
         }
     });
     let row = |name: &str, cells: Vec<String>| {

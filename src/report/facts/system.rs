@@ -78,7 +78,8 @@ pub(super) fn system(material: &Material<'_>, i: usize) -> Value {
     {
         put("fixed_flow_c", json!(flow_c));
     }
-    if let (Some(capital), Some(saving)) = (answer.capital, answer.saving)
+    if let (Some(capital), Some(saving), None) =
+        (answer.capital, answer.saving, &answer.leaves_cold)
         && saving > ABOUT_THE_SAME * (answer.cost + saving).abs()
     {
         put("years_of_saving", json!(capital / saving));

@@ -124,7 +124,7 @@ pub(super) fn spend(material: &Material<'_>) -> Result<Option<Drawn>, ChartError
     };
     let marks = material.locale.marks;
     let systems = lifetime.systems.iter().map(|system| chart::SystemSpend {
-        label: system.label.clone(),
+        label: system.name(),
         today: system.today,
         spent: system
             .by_year
