@@ -3,8 +3,8 @@
 use chrono::NaiveDate;
 
 use super::days::Day;
-use super::own_home::OwnHome;
 use super::model::{Metered, quadratic};
+use super::own_home::OwnHome;
 
 /// What is stated about a heater and the load without heating.
 #[derive(Debug, Clone, Copy, PartialEq)]

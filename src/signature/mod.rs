@@ -3,11 +3,13 @@
 //! [`Readings`] are read and checked, [`DailyWeather`] is the same period's weather, [`fit()`] makes a [`Signature`] of both
 //! (the energy signature of Fels 1986), whose limits hold what the heater's efficiency and the hot water leave open.
 
+mod dates;
 mod days;
 mod fit;
 mod found;
 mod model;
 mod own_home;
+mod pieces;
 mod readings;
 mod rows;
 
