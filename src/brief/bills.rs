@@ -10,12 +10,12 @@ use super::files::Folder;
 use super::home::WeatherFacts;
 use super::leaves::HeatLossSource;
 use super::notes::Notes;
-use super::own_home::{Today, Within, doubt, through_own_home};
+use super::own_home::{Today, Within, doubt, line, through_own_home};
 use super::raw;
 use crate::bounds;
 use crate::document::{Check, Document, Leaf, Section, read_text};
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
-use crate::signature::{Conversion, DailyWeather, FitProblem, Readings, Signature, Stated, fit};
+use crate::signature::{Conversion, DailyWeather, FitProblem, Readings, Signature, Stated};
 use crate::units::{CalorificValue, Fuel, Temperature, parse};
 use crate::weather::{ReadOptions, Weather, read_bytes};
 
@@ -117,10 +117,11 @@ pub(super) fn made(
             Ok(HeatLossSource::Stated(loss)) => Some(loss.w_per_k()),
             _ => None,
         });
-    let line = fit(&readings.intervals, &days, &stated);
+    let line = line(&readings.intervals, &days, &stated);
+    let (signature, open) = check.take(line.map_err(|why| told(why, name, &days)))?;
     let mut made = BillsMade {
         file: name.to_owned(),
-        signature: check.take(line.map_err(|why| told(why, name, &days)))?,
+        signature,
         scale,
         findings: Vec::new(),
         survey_w_per_k,
@@ -135,8 +136,12 @@ pub(super) fn made(
         through_own_home(&mut made, over, &weather, &within, check, notes)
             .map_err(|why| told(why, name, &days)),
     )?;
+    if let (Some(why), None) = (open, &made.signature.own_home) {
+        return check.take(Err(told(why, name, &days)));
+    }
     let signature = &made.signature;
     let mut findings = readings.findings;
+    findings.append(&mut made.findings.clone());
     findings.extend(odd(name, &readings.intervals, signature));
     findings.extend(implausible(name, signature, over, check));
     findings.extend(survey_w_per_k.and_then(|survey| apart(name, signature, survey)));

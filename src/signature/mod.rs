@@ -14,7 +14,7 @@ mod readings;
 mod rows;
 
 pub use days::{DailyWeather, Day};
-pub use fit::fit;
+pub use fit::{fit, fit_at_published_base};
 pub use found::{FitProblem, Limits, Point, Signature, Stated};
 pub use own_home::{Doubt, OwnHome, Tried, fit_own_home};
 pub use readings::{Conversion, Interval, Readings};
