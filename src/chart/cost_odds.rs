@@ -53,7 +53,10 @@ pub fn cost_odds(data: &CostOdds, marks: &Marks) -> Result<Picture, ChartError> 
         "From the line's left to its right end in eight cases of ten; the ring is the middle.";
     let mut scene = Scene::of(marks);
     let top = scene.heading(title, subtitle) + 6.0;
-    let bottom = top + ROW * data.systems.len() as f64 + 6.0;
+    // Where name and figures do not fit beside each other, the figures stand below.
+    let second = if scene.narrow() { 20.0 } else { 0.0 };
+    let row = ROW + second;
+    let bottom = top + row * data.systems.len() as f64 + 6.0;
     scene.height = bottom + 52.0;
     let low = all().fold(f64::INFINITY, f64::min);
     let high = all().fold(f64::NEG_INFINITY, f64::max);
@@ -78,8 +81,8 @@ pub fn cost_odds(data: &CostOdds, marks: &Marks) -> Result<Picture, ChartError> 
         Type::small(),
     );
     for (i, system) in data.systems.iter().enumerate() {
-        let line = top + ROW * i as f64 + 18.0;
-        let y = line + 20.0;
+        let line = top + row * i as f64 + 18.0;
+        let y = line + second + 20.0;
         let small = Type::new(SMALL, Weight::Regular, MUTED);
         let spread = format!(
             "{} to {}, middle {}",
@@ -87,10 +90,16 @@ pub fn cost_odds(data: &CostOdds, marks: &Marks) -> Result<Picture, ChartError> 
             marks.money(&data.currency, system.p90),
             marks.money(&data.currency, system.p50)
         );
-        let room = scene.width - 2.0 * MARGIN - small.width(&spread) - 28.0;
+        let beside = if scene.narrow() {
+            0.0
+        } else {
+            small.width(&spread) + 28.0
+        };
+        let room = scene.width - 2.0 * MARGIN - beside;
         let name = font::fit(named(&system.label), BODY, Weight::Regular, room);
         scene.plate(&name, (MARGIN, line), Anchor::Start, Type::body());
-        scene.plate(&spread, (scene.width - MARGIN, line), Anchor::End, small);
+        let place = (scene.width - MARGIN, line + second);
+        scene.plate(&spread, place, Anchor::End, small);
         scene.line(&[(at(system.p10), y), (at(system.p90), y)], NAVY, 5.0);
         for end in [system.p10, system.p90] {
             scene.line(&[(at(end), y - 7.0), (at(end), y + 7.0)], NAVY, 2.4);

@@ -71,7 +71,10 @@ pub fn saving_odds(data: &SavingOdds, marks: &Marks) -> Result<Picture, ChartErr
     let subtitle = "Saving of a year against today's system in every sample; right of the line the choice is cheaper.";
     let mut scene = Scene::of(marks);
     let top = scene.heading(title, subtitle) + 6.0;
-    let bottom = top + ROW * data.choices.len() as f64 + 6.0;
+    // Where name and chance do not fit beside each other, the chance stands below.
+    let second = if scene.narrow() { 20.0 } else { 0.0 };
+    let row = ROW + second;
+    let bottom = top + row * data.choices.len() as f64 + 6.0;
     scene.height = bottom + 52.0;
     let low = all().copied().fold(0.0, f64::min);
     let high = all().copied().fold(0.0, f64::max);
@@ -112,7 +115,7 @@ pub fn saving_odds(data: &SavingOdds, marks: &Marks) -> Result<Picture, ChartErr
         .map(|(_, share)| *share)
         .fold(0.0, f64::max);
     for (i, heap) in heaps.iter().enumerate() {
-        let base = top + ROW * (i + 1) as f64;
+        let base = top + row * (i + 1) as f64;
         for (place, share) in heap {
             let (from, to) = (*place as f64 * slice, (*place + 1) as f64 * slice);
             let height = share / highest * HEAP;
@@ -133,13 +136,19 @@ pub fn saving_odds(data: &SavingOdds, marks: &Marks) -> Result<Picture, ChartErr
     }
     scene.line(&[(at(0.0), top), (at(0.0), bottom)], INK, 1.8);
     for (i, choice) in data.choices.iter().enumerate() {
-        let line = top + ROW * i as f64 + 20.0;
+        let line = top + row * i as f64 + 20.0;
         let chance = choice.chance_text();
         let bold = Type::new(BODY, Weight::Bold, INK);
-        let room = scene.width - 2.0 * MARGIN - bold.width(&chance) - 28.0;
+        let beside = if scene.narrow() {
+            0.0
+        } else {
+            bold.width(&chance) + 28.0
+        };
+        let room = scene.width - 2.0 * MARGIN - beside;
         let name = font::fit(named(&choice.label), BODY, Weight::Regular, room);
         scene.plate(&name, (MARGIN, line), Anchor::Start, Type::body());
-        scene.plate(&chance, (scene.width - MARGIN, line), Anchor::End, bold);
+        let place = (scene.width - MARGIN, line + second);
+        scene.plate(&chance, place, Anchor::End, bold);
     }
     Ok(Picture::new(title, alt(data, marks), scene))
 }

@@ -3,10 +3,12 @@
 use std::path::PathBuf;
 
 use super::sampling::{Stop, draw};
-use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
+use super::{
+    Failure, Format, NewFile, check_folder, picture_files, print, print_json, warn, write_files,
+};
 use crate::answer::odds::{OddsAnswer, Wish, odds};
 use crate::brief::Brief;
-use crate::report::{Drawn, odds_pictures, odds_text, samples_csv, spread_picture};
+use crate::report::{odds_pictures, odds_text, samples_csv, spread_picture};
 use crate::study::odds::{Sample, Sampler};
 
 /// Samples of a block: whole blocks are drawn, their scatter gives the sampling errors.
@@ -127,12 +129,9 @@ fn files(
             samples_csv(&brief.case, sampler, blocks)?,
         ),
     ];
-    let mut drawn = odds_pictures(&brief.case, blocks, &brief.locale)?;
+    let all: Vec<usize> = (0..brief.case.contenders.len()).collect();
+    let mut drawn = odds_pictures(&brief.case, blocks, &all, &brief.locale)?;
     drawn.extend(spread_picture(answer, &brief.locale)?);
-    for Drawn { name, picture, .. } in drawn {
-        let path = |ending: &str| folder.join(format!("{name}.{ending}"));
-        files.push(NewFile::new(path("svg"), picture.svg()?));
-        files.push(NewFile::new(path("png"), picture.png()?));
-    }
+    files.extend(picture_files(folder, &drawn)?);
     Ok(files)
 }

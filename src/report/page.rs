@@ -120,6 +120,17 @@ fn write_section(
                 let name = format!("{title}, table {tables}");
                 write_table(out, &name, &head, &rows, &figures);
             }
+            Block::Abreast(names) => {
+                let _ = writeln!(out, "<div class=\"abreast\">");
+                for name in names {
+                    if let Some((drawn, _)) = pictures.get(name.as_str()) {
+                        let svg = drawn.picture.svg_without_fonts()?;
+                        let name = escaped(&name);
+                        let _ = writeln!(out, "<figure id=\"picture-{name}\">\n{svg}\n</figure>");
+                    }
+                }
+                let _ = writeln!(out, "</div>");
+            }
             Block::Picture { name, caption } => {
                 if let Some((drawn, phone)) = pictures.get(name.as_str()) {
                     let svg = drawn.picture.svg_without_fonts()?;

@@ -3,7 +3,8 @@
 use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
 use crate::answer::lifetime::{LifetimeAnswer, LifetimeYear, SystemLifetime};
-use crate::answer::study::{ChoiceStudy, EmitterAnswer, SizesAnswer, StudyAnswer, SwingAnswer};
+use crate::answer::study::{ChoiceStudy, SizesAnswer, StudyAnswer};
+use crate::answer::{EmitterAnswer, SwingAnswer};
 use crate::answer::{LeverAnswer, short};
 
 /// The studies as text for a terminal of 80 columns or more.

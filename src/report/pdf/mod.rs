@@ -21,6 +21,10 @@ use crate::chart;
 use draw::{About, Sheet, document};
 use set::Setter;
 
+/// Sizes of the first page that are tried, as shares of the usual one.
+const SIZES: &[f64] = &[1.0, 0.97, 0.94, 0.91, SMALLEST];
+const SMALLEST: f64 = 0.88;
+
 /// The report as PDF on the paper of the place.
 ///
 /// # Errors
@@ -32,12 +36,22 @@ pub fn report_pdf(material: &Material<'_>, drawn: &[Drawn]) -> Result<Vec<u8>, R
     let (width, height) = sheet.column();
     let place = place(material);
     let title = sections.first().map_or("", |section| &section.title);
-    let mut setter = Setter::new(width, drawn);
-    setter.title(&place, title);
     let (first, rest) = sections.split_at(FIRST_PAGE.min(sections.len()));
-    for section in first {
-        setter.section(section, true);
-    }
+    let first_page = |scale: f64| {
+        let mut setter = Setter::new(width, drawn, scale);
+        setter.title(&place, title);
+        for section in first {
+            setter.section(section, true);
+        }
+        setter
+    };
+    // The first page is one page: long names and Letter paper make its text a little smaller.
+    let sizes = SIZES.iter().copied();
+    let mut setter = sizes
+        .map(first_page)
+        .find(|setter| setter.height() <= height)
+        .unwrap_or_else(|| first_page(SMALLEST));
+    setter.usual_size();
     setter.contents(rest);
     for section in rest {
         setter.section(section, false);

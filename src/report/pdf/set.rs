@@ -55,9 +55,10 @@ const INDENT: f64 = 13.0;
 const BEFORE_ITEM: f64 = 2.6;
 /// Widest line of running text, points: some 85 signs.
 const MEASURE: f64 = 410.0;
-/// Tallest picture of the first page and of the others, points.
-const TALLEST_FIRST: f64 = 172.0;
+/// Tallest picture, points.
 const TALLEST: f64 = 430.0;
+/// Places for small pictures side by side.
+const ABREAST: f64 = 3.0;
 /// Widest share of the column that a picture takes.
 const WIDEST: f64 = 0.97;
 
@@ -68,18 +69,41 @@ pub(super) struct Setter<'a> {
     /// Width of the column.
     pub width: f64,
     pictures: BTreeMap<&'a str, (usize, &'a Drawn)>,
+    /// Size of what is set, as a share of its usual size.
+    scale: f64,
 }
 
 impl<'a> Setter<'a> {
-    pub(super) fn new(width: f64, drawn: &'a [Drawn]) -> Self {
+    /// `scale` is that of what is set until `usual_size`.
+    pub(super) fn new(width: f64, drawn: &'a [Drawn], scale: f64) -> Self {
         let pictures = drawn.iter().enumerate();
         Self {
             rows: Vec::new(),
             structure: Structure::default(),
             width,
+            scale,
             pictures: pictures
                 .map(|(i, drawn)| (drawn.name.as_str(), (i, drawn)))
                 .collect(),
+        }
+    }
+
+    /// Sets what follows in its usual size.
+    pub(super) fn usual_size(&mut self) {
+        self.scale = 1.0;
+    }
+
+    /// Height of all that has been set.
+    pub(super) fn height(&self) -> f64 {
+        self.rows.iter().map(Row::whole).sum()
+    }
+
+    fn scaled(&self, style: Style) -> Style {
+        Style {
+            size: style.size * self.scale,
+            leading: style.leading * self.scale,
+            before: style.before * self.scale,
+            ..style
         }
     }
 
@@ -218,7 +242,8 @@ impl<'a> Setter<'a> {
                     figures,
                 },
             ),
-            Block::Picture { name, caption } => self.picture(name, caption, first_page),
+            Block::Abreast(names) => self.abreast(names),
+            Block::Picture { name, caption } => self.picture(name, caption),
         }
     }
 
@@ -242,6 +267,7 @@ impl<'a> Setter<'a> {
 
     /// Sets running text in the part that is open. The first two and the last two lines of a paragraph stay together.
     fn text(&mut self, text: &[Span], style: Style, indent: f64, room: f64) {
+        let style = self.scaled(style);
         let set = lines(text, style.size, style.weight, room - indent);
         let count = set.len();
         let mut rows = Vec::with_capacity(count);
@@ -308,6 +334,7 @@ impl<'a> Setter<'a> {
             self.text(item, style, INDENT, room);
             self.structure.close();
             self.structure.close();
+            let style = self.scaled(style);
             if let Some(row) = self.rows.get_mut(at) {
                 row.inks.insert(
                     0,
@@ -335,25 +362,29 @@ impl<'a> Setter<'a> {
     /// The figures of the first page side by side, each with its number large.
     fn key_figures(&mut self, items: &[Text]) {
         const GAP: f64 = 6.0;
-        const PAD: f64 = 7.0;
         const NUMBER: Style = Style::new(14.5, 19.0, 0.0, Weight::Bold, colours::ACCENT);
         const WORDS: Style = Style::new(8.5, 11.2, 0.0, Weight::Regular, colours::INK);
+        let pad = 6.0 * self.scale;
+        let (number_style, words_style) = (self.scaled(NUMBER), self.scaled(WORDS));
         let count = items.len().max(1) as f64;
         let width = (self.width - GAP * (count - 1.0)) / count;
-        let inner = width - 2.0 * PAD;
+        let inner = width - 2.0 * pad;
         let set: Vec<_> = items
             .iter()
             .map(|item| {
                 let (number, words): (Vec<Span>, Vec<Span>) =
                     item.iter().cloned().partition(|span| span.strong);
-                let number = lines(&number, NUMBER.size, NUMBER.weight, inner);
-                (number, lines(&words, WORDS.size, WORDS.weight, inner))
+                let number = lines(&number, number_style.size, number_style.weight, inner);
+                (
+                    number,
+                    lines(&words, words_style.size, words_style.weight, inner),
+                )
             })
             .collect();
         let tall = |(number, words): &(Vec<_>, Vec<_>)| {
-            number.len() as f64 * NUMBER.leading + words.len() as f64 * WORDS.leading
+            number.len() as f64 * number_style.leading + words.len() as f64 * words_style.leading
         };
-        let height = set.iter().map(tall).fold(0.0, f64::max) + 2.0 * PAD;
+        let height = set.iter().map(tall).fold(0.0, f64::max) + 2.0 * pad;
         let mut row = Row {
             before: 8.0,
             height,
@@ -374,11 +405,11 @@ impl<'a> Setter<'a> {
             });
             self.structure.open(Kind::Item);
             self.structure.open(Kind::ItemBody);
-            let mut y = PAD;
+            let mut y = pad;
             let mut leaves = self.leaves();
-            for (texts, style) in [(number, NUMBER), (words, WORDS)] {
+            for (texts, style) in [(number, number_style), (words, words_style)] {
                 for line in texts {
-                    let at = (left + PAD, y + style.leading * 0.76);
+                    let at = (left + pad, y + style.leading * 0.76);
                     row.write(line, at, style.size, style.colour, &mut leaves);
                     y += style.leading;
                 }
@@ -391,17 +422,42 @@ impl<'a> Setter<'a> {
         self.rows.push(row);
     }
 
-    fn picture(&mut self, name: &str, caption: &[Span], first_page: bool) {
+    /// Small pictures side by side.
+    fn abreast(&mut self, names: &[String]) {
+        const GAP: f64 = 12.0;
+        let found: Vec<(usize, &Drawn)> = names
+            .iter()
+            .filter_map(|name| self.pictures.get(name.as_str()).copied())
+            .collect();
+        let room = (self.width - GAP * (ABREAST - 1.0)) / ABREAST;
+        let mut row = Row {
+            before: 9.0 * self.scale,
+            ..Row::default()
+        };
+        for (i, (index, drawn)) in found.into_iter().enumerate() {
+            let canvas = drawn.picture.canvas();
+            let scale = room / canvas.right;
+            self.structure.open(Kind::Figure(said(drawn)));
+            let leaf = self.structure.leaf();
+            self.structure.close();
+            row.height = row.height.max(canvas.bottom * scale);
+            row.inks.push(Placed {
+                x: i as f64 * (room + GAP),
+                y: 0.0,
+                leaf: Some(leaf),
+                ink: Ink::Picture { index, scale },
+            });
+        }
+        self.rows.push(row);
+    }
+
+    fn picture(&mut self, name: &str, caption: &[Span]) {
         let Some(&(index, drawn)) = self.pictures.get(name) else {
             return;
         };
         let canvas = drawn.picture.canvas();
-        let tallest = if first_page { TALLEST_FIRST } else { TALLEST };
-        let scale = (self.width * WIDEST / WIDTH).min(tallest / canvas.bottom);
-        self.structure.open(Kind::Figure(format!(
-            "{}. {}",
-            drawn.picture.title, drawn.picture.alt
-        )));
+        let scale = (self.width * WIDEST / WIDTH).min(TALLEST / canvas.bottom);
+        self.structure.open(Kind::Figure(said(drawn)));
         let leaf = self.structure.leaf();
         self.structure.close();
         self.rows.push(Row {
@@ -420,4 +476,9 @@ impl<'a> Setter<'a> {
         self.text(caption, CAPTION, 0.0, MEASURE);
         self.structure.close();
     }
+}
+
+/// What is read out in place of a picture.
+fn said(drawn: &Drawn) -> String {
+    format!("{}. {}", drawn.picture.title, drawn.picture.alt)
 }
