@@ -34,15 +34,16 @@ impl Locale {
             let behind = &word[bare.len()..];
             let amount = (bare == currency).then(|| out.last()?.parse::<f64>().ok());
             if let Some(amount) = amount.flatten() {
-                out.pop();
-                out.push(self.marks.money(currency, amount) + behind);
+                let plus = out.pop().filter(|number| number.starts_with('+'));
+                let money = self.marks.money(currency, amount) + behind;
+                out.push(plus.map_or(money.clone(), |_| format!("+{money}")));
             } else if let Ok(date) = NaiveDate::parse_from_str(bare, "%Y-%m-%d") {
                 out.push(self.dates.write(date) + behind);
             } else {
-                out.push(word.to_owned());
+                out.push(self.marks.localized(word));
             }
         }
-        self.marks.localized(&out.join(" "))
+        out.join(" ")
     }
 }
 
@@ -258,17 +259,17 @@ mod tests {
     #[test]
     fn a_sentence_takes_the_form_of_the_place() {
         let mut place = Locale::default();
-        let said = "between 80 EUR and 1370 EUR cheaper, from 2024-01-14, 1.5 K; a EUR";
+        let said = "between 80 EUR and 1370 EUR cheaper, from 2024-01-14, 1.5 K; a EUR; +5 EUR.";
         assert_eq!(
             place.told(said, "EUR"),
-            "between €80 and €1,370 cheaper, from 14 January 2024, 1.5 K; a EUR"
+            "between €80 and €1,370 cheaper, from 14 January 2024, 1.5 K; a EUR; +€5."
         );
         place.marks.decimal = ',';
         place.marks.thousands = Some('.');
         place.dates = DateOrder::YearFirst;
         assert_eq!(
             place.told(said, "EUR"),
-            "between €80 and €1.370 cheaper, from 2024-01-14, 1,5 K; a EUR"
+            "between €80 and €1.370 cheaper, from 2024-01-14, 1,5 K; a EUR; +€5."
         );
     }
 

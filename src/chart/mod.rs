@@ -83,7 +83,9 @@ pub use energy_flow::{EnergyFlow, Flow, FlowKind, energy_flow};
 pub use font::clean as plain_line;
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
 #[cfg(feature = "pdf")]
-pub(crate) use font::{Weight, glyphs, has as font_has, width as text_width};
+pub(crate) use font::{
+    UNPRINTABLE, Weight, glyphs, has as font_has, printable, width as text_width,
+};
 pub use geometry::Rect;
 pub use glance::{GLANCE_WIDTH, Glance, GlanceRow, GlanceShape, glance};
 pub use label::Label;

@@ -6,13 +6,13 @@ use std::path::{Path, PathBuf};
 use super::progress::Progress;
 use super::sampling::draw;
 use super::{
-    Failure, Format, NewFile, check_folder, picture_files, print, print_json, warn, write_files,
+    Failure, Format, NewFile, check_folder, picture_files, print, print_json, warn_in, write_files,
 };
 use crate::answer::odds::summary;
 use crate::answer::{Estimate, compare_patterns, compose, what_if};
 use crate::brief::{Brief, DEFAULTS};
 use crate::home::Pattern;
-use crate::locale::Marks;
+use crate::locale::Locale;
 use crate::problem::Problems;
 #[cfg(feature = "pdf")]
 use crate::report::report_pdf;
@@ -139,11 +139,11 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         write_files(&files, args.force)?;
     }
     progress.done();
-    warn(&estimate.findings);
+    warn_in(&estimate.findings, &brief.locale, &estimate.currency);
     match args.format {
         Format::Json => print_json(&estimate),
         Format::Text => {
-            let mut text = text(&estimate, &brief.locale.marks, args);
+            let mut text = text(&estimate, &brief.locale, args);
             if args.bills {
                 text += &format!("\n\n{}", accounts(&estimate, &brief, &outcomes)?);
             }
@@ -220,8 +220,8 @@ fn files(
     Ok(files)
 }
 
-fn text(estimate: &Estimate, marks: &Marks, args: &Args) -> String {
-    let mut text = estimate_text(estimate, marks, args.assumptions);
+fn text(estimate: &Estimate, locale: &Locale, args: &Args) -> String {
+    let mut text = estimate_text(estimate, locale, args.assumptions);
     if args.home {
         text += &format!("\n\n{}", home_text(estimate));
     }

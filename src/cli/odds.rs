@@ -4,7 +4,7 @@ use std::path::PathBuf;
 
 use super::sampling::{Stop, draw};
 use super::{
-    Failure, Format, NewFile, check_folder, picture_files, print, print_json, warn, write_files,
+    Failure, Format, NewFile, check_folder, picture_files, print, print_json, warn_in, write_files,
 };
 use crate::answer::odds::{OddsAnswer, Wish, odds};
 use crate::brief::Brief;
@@ -93,7 +93,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         ));
     };
     answer.findings.extend(brief.told.findings.iter().cloned());
-    warn(&answer.findings);
+    warn_in(&answer.findings, &brief.locale, &answer.currency);
     if let Some(folder) = &args.out {
         let files = files(folder, &answer, &sampler, &drawing.blocks, &brief);
         let files = files.map_err(|error| Failure::Write {
@@ -104,7 +104,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
     match args.format {
         Format::Json => print_json(&answer)?,
-        Format::Text => print(&odds_text(&answer, &brief.locale.marks))?,
+        Format::Text => print(&odds_text(&answer, &brief.locale))?,
     }
     if drawing.interrupted {
         return Err(Failure::Interrupted {

@@ -2,7 +2,7 @@
 
 use std::path::{Path, PathBuf};
 
-use super::{Failure, Format, NewFile, picture_files, print, print_json, warn, write_files};
+use super::{Failure, Format, NewFile, picture_files, print, print_json, warn_in, write_files};
 use crate::answer::study::{StudyAnswer, Wish, studies};
 use crate::brief::Brief;
 use crate::locale::Marks;
@@ -89,10 +89,10 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         let files = files(&answer, folder, &brief.locale.marks)?;
         write_files(&files, args.force)?;
     }
-    warn(&answer.findings);
+    warn_in(&answer.findings, &brief.locale, &answer.currency);
     match args.format {
         Format::Json => print_json(&answer),
-        Format::Text => print(&study_text(&answer)),
+        Format::Text => print(&study_text(&answer, &brief.locale)),
     }
 }
 

@@ -23,6 +23,7 @@ mod sentences;
 mod study;
 mod table;
 mod text;
+mod told;
 mod weather_years;
 
 pub use account::{accounts_text, bill_table};

@@ -4,10 +4,13 @@ use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
 use crate::answer::odds::OddsAnswer;
 use crate::answer::short;
-use crate::locale::Marks;
+use crate::locale::Locale;
 
-/// The odds as text for a terminal of 80 columns or more, with the marks of a place.
-pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
+/// The odds as text for a terminal of 80 columns or more, in the form of a place.
+pub fn odds_text(answer: &OddsAnswer, locale: &Locale) -> String {
+    let marks = &locale.marks;
+    let told = |sentence: &str| locale.told(sentence, &answer.currency);
+    let money = |amount: f64| marks.money(&answer.currency, amount);
     let whole = |value: f64| marks.number(value, 0);
     let error = |error: Option<f64>| {
         // A whole percent: the error of an error is large.
@@ -19,7 +22,7 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
         answer
             .choices
             .iter()
-            .map(|choice| wrapped(&marks.localized(&choice.sentence), "", "  "))
+            .map(|choice| wrapped(&told(&choice.sentence), "", "  "))
             .collect::<Vec<_>>()
             .join("\n"),
     ];
@@ -27,9 +30,9 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     let rows = answer.choices.iter().map(|choice| {
         vec![
             choice.label.clone(),
-            whole(choice.saving.p10),
-            whole(choice.saving.p50),
-            whole(choice.saving.p90),
+            money(choice.saving.p10),
+            money(choice.saving.p50),
+            money(choice.saving.p90),
             choice.spf_h4.map_or_else(
                 || "–".to_owned(),
                 |spf| format!("{}–{}", marks.number(spf.p10, 1), marks.number(spf.p90, 1)),
@@ -54,14 +57,14 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
         let lines = answer.what_matters.iter().map(|one| {
             let turns = one.turns_with.as_ref().map_or_else(
                 || "does not turn the answer".to_owned(),
-                |with| format!("turns with {}", marks.localized(with)),
+                |with| format!("turns with {}", told(with)),
             );
             let swing = match (one.saving_at_low, one.saving_at_high) {
                 (Some(low), Some(high)) => {
                     format!(
-                        "by it alone a saving of {} to {} {code}, ",
-                        whole(low),
-                        whole(high)
+                        "by it alone a saving of {} to {}, ",
+                        money(low),
+                        money(high)
                     )
                 }
                 _ => String::new(),
@@ -95,7 +98,7 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
         });
         blocks.push(lines.collect::<Vec<_>>().join("\n"));
     }
-    blocks.push(wrapped(&marks.localized(&answer.find_out), "", "  "));
+    blocks.push(wrapped(&told(&answer.find_out), "", "  "));
     let ranges = answer.uncertain.iter().map(|one| {
         let line = format!(
             "{} {} to {} {}: {}",

@@ -54,14 +54,16 @@ pub fn report_html(
         .iter()
         .map(|section| context! { id => section.id, title => &section.title })
         .collect();
+    let (first, rest) = (body(first, "first")?, body(rest, "rest")?);
+    let fonts = chart::font_css(&format!("{}{first}{rest}", place(material)));
     let page = environment.get_template("page.html")?.render(context! {
         title => sections.first().map(|section| section.title.as_str()),
         place => place(material),
-        fonts => chart::font_css(),
+        fonts,
         style => STYLE,
         paper => material.locale.paper.css(),
-        first => body(first, "first")?,
-        rest => body(rest, "rest")?,
+        first,
+        rest,
         contents,
     })?;
     Ok(page)

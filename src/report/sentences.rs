@@ -130,6 +130,7 @@ fn environment<'a>(material: &Material<'_>, drawn: &[Drawn]) -> Result<Environme
 
 fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str) {
     let marks = locale.marks;
+    let of_the_place = currency.to_owned();
     let currency = currency.to_owned();
     let money = move |amount: f64, decimals: usize| marks.money_to(&currency, amount, decimals);
     // What is missing is told by a dash, never by a nought.
@@ -195,7 +196,9 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
             }
         },
     );
-    environment.add_filter("localized", move |text: &str| marks.localized(text));
+    environment.add_filter("localized", move |text: &str| {
+        locale.told(text, &of_the_place)
+    });
     environment.add_filter("file", |text: &str| file(text));
     environment.add_filter("short", |text: &str| short(text));
     environment.add_filter("capitalized", |text: &str| {

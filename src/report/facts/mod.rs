@@ -142,9 +142,11 @@ fn odds_depend(choices: &[&Value]) -> Value {
             None => groups.push((words, vec![label])),
         }
     }
-    let groups = groups
-        .iter()
-        .map(|(words, labels)| json!({ "words": words, "labels": labels.join("; ") }));
+    let groups = groups.iter().map(|(words, labels)| {
+        let rest = words.strip_prefix("It ");
+        let words = rest.map_or_else(|| (*words).to_owned(), |rest| format!("it {rest}"));
+        json!({ "words": words, "labels": labels.join("; ") })
+    });
     json!(groups.collect::<Vec<_>>())
 }
 

@@ -32,7 +32,13 @@ pub(super) struct Style {
 }
 
 impl Style {
-    const fn new(size: f64, leading: f64, before: f64, weight: Weight, colour: Colour) -> Self {
+    pub(super) const fn new(
+        size: f64,
+        leading: f64,
+        before: f64,
+        weight: Weight,
+        colour: Colour,
+    ) -> Self {
         Self {
             size,
             leading,
@@ -57,8 +63,6 @@ const BEFORE_ITEM: f64 = 2.6;
 const MEASURE: f64 = 410.0;
 /// Tallest picture, points.
 const TALLEST: f64 = 430.0;
-/// Places for small pictures side by side.
-const ABREAST: f64 = 3.0;
 /// Widest share of the column that a picture takes.
 const WIDEST: f64 = 0.97;
 
@@ -68,9 +72,9 @@ pub(super) struct Setter<'a> {
     pub structure: Structure,
     /// Width of the column.
     pub width: f64,
-    pictures: BTreeMap<&'a str, (usize, &'a Drawn)>,
+    pub(super) pictures: BTreeMap<&'a str, (usize, &'a Drawn)>,
     /// Size of what is set, as a share of its usual size.
-    scale: f64,
+    pub(super) scale: f64,
 }
 
 impl<'a> Setter<'a> {
@@ -98,7 +102,7 @@ impl<'a> Setter<'a> {
         self.rows.iter().map(Row::whole).sum()
     }
 
-    fn scaled(&self, style: Style) -> Style {
+    pub(super) fn scaled(&self, style: Style) -> Style {
         Style {
             size: style.size * self.scale,
             leading: style.leading * self.scale,
@@ -359,98 +363,6 @@ impl<'a> Setter<'a> {
         self.structure.close();
     }
 
-    /// The figures of the first page side by side, each with its number large.
-    fn key_figures(&mut self, items: &[Text]) {
-        const GAP: f64 = 6.0;
-        const NUMBER: Style = Style::new(14.5, 19.0, 0.0, Weight::Bold, colours::ACCENT);
-        const WORDS: Style = Style::new(8.5, 11.2, 0.0, Weight::Regular, colours::INK);
-        let pad = 6.0 * self.scale;
-        let (number_style, words_style) = (self.scaled(NUMBER), self.scaled(WORDS));
-        let count = items.len().max(1) as f64;
-        let width = (self.width - GAP * (count - 1.0)) / count;
-        let inner = width - 2.0 * pad;
-        let set: Vec<_> = items
-            .iter()
-            .map(|item| {
-                let (number, words): (Vec<Span>, Vec<Span>) =
-                    item.iter().cloned().partition(|span| span.strong);
-                let number = lines(&number, number_style.size, number_style.weight, inner);
-                (
-                    number,
-                    lines(&words, words_style.size, words_style.weight, inner),
-                )
-            })
-            .collect();
-        let tall = |(number, words): &(Vec<_>, Vec<_>)| {
-            number.len() as f64 * number_style.leading + words.len() as f64 * words_style.leading
-        };
-        let height = set.iter().map(tall).fold(0.0, f64::max) + 2.0 * pad;
-        let mut row = Row {
-            before: 8.0,
-            height,
-            ..Row::default()
-        };
-        self.structure.open(Kind::List { numbered: false });
-        for (i, (number, words)) in set.iter().enumerate() {
-            let left = i as f64 * (width + GAP);
-            row.inks.push(Placed {
-                x: left,
-                y: 0.0,
-                leaf: None,
-                ink: Ink::Fill {
-                    width,
-                    height,
-                    colour: colours::WASH,
-                },
-            });
-            self.structure.open(Kind::Item);
-            self.structure.open(Kind::ItemBody);
-            let mut y = pad;
-            let mut leaves = self.leaves();
-            for (texts, style) in [(number, number_style), (words, words_style)] {
-                for line in texts {
-                    let at = (left + pad, y + style.leading * 0.76);
-                    row.write(line, at, style.size, style.colour, &mut leaves);
-                    y += style.leading;
-                }
-            }
-            drop(leaves);
-            self.structure.close();
-            self.structure.close();
-        }
-        self.structure.close();
-        self.rows.push(row);
-    }
-
-    /// Small pictures side by side.
-    fn abreast(&mut self, names: &[String]) {
-        const GAP: f64 = 12.0;
-        let found: Vec<(usize, &Drawn)> = names
-            .iter()
-            .filter_map(|name| self.pictures.get(name.as_str()).copied())
-            .collect();
-        let room = (self.width - GAP * (ABREAST - 1.0)) / ABREAST;
-        let mut row = Row {
-            before: 9.0 * self.scale,
-            ..Row::default()
-        };
-        for (i, (index, drawn)) in found.into_iter().enumerate() {
-            let canvas = drawn.picture.canvas();
-            let scale = room / canvas.right;
-            self.structure.open(Kind::Figure(said(drawn)));
-            let leaf = self.structure.leaf();
-            self.structure.close();
-            row.height = row.height.max(canvas.bottom * scale);
-            row.inks.push(Placed {
-                x: i as f64 * (room + GAP),
-                y: 0.0,
-                leaf: Some(leaf),
-                ink: Ink::Picture { index, scale },
-            });
-        }
-        self.rows.push(row);
-    }
-
     fn picture(&mut self, name: &str, caption: &[Span]) {
         let Some(&(index, drawn)) = self.pictures.get(name) else {
             return;
@@ -479,6 +391,6 @@ impl<'a> Setter<'a> {
 }
 
 /// What is read out in place of a picture.
-fn said(drawn: &Drawn) -> String {
+pub(super) fn said(drawn: &Drawn) -> String {
     format!("{}. {}", drawn.picture.title, drawn.picture.alt)
 }
