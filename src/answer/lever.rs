@@ -242,6 +242,9 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
             value * 100.0,
             now * 100.0
         ),
+        Lever::HighLift => times("electricity at a high lift", "more", "less", None),
+        Lever::PartLoad => times("electricity at part load", "more", "less", None),
+        Lever::OutputInCold => times("an output in the cold", "larger", "smaller", None),
         Lever::LoopResistance => {
             let absolute = match choice.system.heating.machine() {
                 Some(system) => match &system.source {

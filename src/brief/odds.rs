@@ -48,6 +48,14 @@ pub(super) struct ChoiceOddsTable {
     pub rated_output: Option<Section<RangeTable>>,
     /// What its machine keeps of its laboratory performance.
     pub field_factor: Option<Section<RangeTable>>,
+    /// Electricity for a unit of heat at a lift (flow less source) 30 K above the rated one, as a share of the sheet's; in proportion at
+    /// other lifts, none at the rated one.
+    pub electricity_at_high_lift: Option<Section<RangeTable>>,
+    /// Electricity for a unit of heat at the least output, as a share of the sheet's; in proportion up to the greatest, where there is none.
+    pub electricity_at_part_load: Option<Section<RangeTable>>,
+    /// Greatest output at -7 °C outdoors (5 K below the rated brine or water), as a share of the sheet's; in proportion between, none from
+    /// the rated source temperature on.
+    pub output_in_cold: Option<Section<RangeTable>>,
     /// Loop resistance, as a share of the choice's.
     pub loop_resistance: Option<Section<RangeTable>>,
     /// Length of its bores or trenches.
@@ -235,10 +243,23 @@ pub(super) fn said(raw: &raw::Brief, check: &mut Check) -> Said {
     }
     for (place, choice) in raw.choice.iter().enumerate() {
         let Some(odds) = &choice.odds else { continue };
-        let ranges: [(Lever, &Option<Section<RangeTable>>, Reader, Reader); 5] = [
+        let ranges: [(Lever, &Option<Section<RangeTable>>, Reader, Reader); 8] = [
             (Lever::FlowTemperature, &odds.flow, celsius, kelvin),
             (Lever::RatedOutput, &odds.rated_output, kilowatts, kilowatts),
             (Lever::FieldFactor, &odds.field_factor, share, share),
+            (
+                Lever::HighLift,
+                &odds.electricity_at_high_lift,
+                share,
+                share,
+            ),
+            (
+                Lever::PartLoad,
+                &odds.electricity_at_part_load,
+                share,
+                share,
+            ),
+            (Lever::OutputInCold, &odds.output_in_cold, share, share),
             (Lever::LoopResistance, &odds.loop_resistance, share, share),
             (Lever::LoopLength, &odds.loop_length, metres, metres),
         ];

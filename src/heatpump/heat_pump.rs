@@ -32,7 +32,7 @@ pub struct HeatPump {
 }
 
 /// What does not change with size or allowance.
-#[derive(Debug)]
+#[derive(Debug, Clone)]
 pub(super) struct Core {
     pub label: String,
     pub typical: bool,

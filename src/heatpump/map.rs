@@ -7,8 +7,11 @@
 //! Nothing with a kink is in the map: limits, frost, cycling and backup stand outside it.
 
 mod build;
+mod difference;
 mod error;
 
+pub(super) use difference::Pivot;
+pub use difference::{COLD_AIR_K, COLD_GROUND_K, HIGH_LIFT_K, SheetDoubts};
 pub use error::MapError;
 
 use super::limits::{LEAST_DIFFERENCE_K, Limits};

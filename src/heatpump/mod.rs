@@ -9,6 +9,7 @@ mod compressor;
 mod correction;
 pub mod cycle;
 mod deliver;
+mod doubted;
 mod duty;
 mod exact;
 mod exchanger;
@@ -38,7 +39,7 @@ pub use heat_pump::{HeatPump, USUAL_FIELD_FACTOR};
 pub use idle::IdlePower;
 pub use limits::{LEAST_DIFFERENCE_K, LOWEST_FLOW_C, Limits};
 pub use machine::{Machine, Operation, SolveError};
-pub use map::{Input, Map, MapError, Range};
+pub use map::{COLD_AIR_K, COLD_GROUND_K, HIGH_LIFT_K, Input, Map, MapError, Range, SheetDoubts};
 pub use part_load::{running_rise_k, running_spread_k, start_up_loss_kw, starts_per_hour};
 pub use priors::Prior;
 pub use sheet::{

@@ -5,6 +5,7 @@ use std::sync::Arc;
 
 use super::case::{Account, Contender};
 use super::lever::{Again, Lever};
+use crate::heatpump::SheetDoubts;
 use crate::home::Emitters;
 use crate::problem::{Place, Problem, Problems};
 use crate::source::Source;
@@ -117,6 +118,9 @@ impl Lever {
             Self::FlowTemperature
             | Self::RatedOutput
             | Self::FieldFactor
+            | Self::HighLift
+            | Self::PartLoad
+            | Self::OutputInCold
             | Self::LoopResistance
             | Self::LoopLength
             | Self::Capital
@@ -175,10 +179,25 @@ impl Lever {
                     outlay.grant = value;
                 }
             }
+            // Doubts about a sheet are met all together by `doubt_sheet`.
             _ => {}
         }
         Ok(())
     }
+}
+
+/// Meets what some levers doubt about the sheet of a choice: one map for all of them.
+pub(super) fn doubt_sheet(moves: &[(Lever, f64)], contender: &mut Contender) {
+    let Some(system) = contender.system.heating.machine_mut() else {
+        return;
+    };
+    let mut doubts = SheetDoubts::default();
+    for &(lever, value) in moves {
+        if let Some(doubted) = lever.doubted(&mut doubts) {
+            *doubted = value;
+        }
+    }
+    system.machine = system.machine.with_doubts(&doubts);
 }
 
 /// Changes the plan of every contender; what the first one's shares with it, it shares again.

@@ -5,6 +5,7 @@ use std::sync::Arc;
 
 use chrono_tz::Tz;
 
+use super::act::doubt_sheet;
 use super::ageing::Aged;
 use super::fuel_carbon::{Both, CarbonOfFuel};
 use super::lever::Lever;
@@ -243,6 +244,11 @@ impl Case {
                 });
                 return Err(problems);
             }
+        }
+        for (of, contender) in contenders.iter_mut().enumerate() {
+            let own = values.iter().filter(|(_, choice, _)| *choice == of);
+            let own: Vec<_> = own.map(|(lever, _, value)| (*lever, *value)).collect();
+            doubt_sheet(&own, contender);
         }
         // Another loop has another past; otherwise the past is scaled when the year is run.
         for (_, of, _) in values

@@ -2,6 +2,7 @@
 
 use super::case::Case;
 use crate::bounds::{self, Bound};
+use crate::heatpump::SheetDoubts;
 use crate::problem::{Place, Problem, Problems};
 use crate::source::{Memory, Source};
 use crate::year::Heating;
@@ -25,6 +26,12 @@ pub enum Lever {
     RatedOutput,
     /// What the choice's machine keeps of its laboratory performance, as a fraction.
     FieldFactor,
+    /// Electricity that the choice's machine takes at a high lift, as a multiple of what its sheet says; see [`SheetDoubts`].
+    HighLift,
+    /// Electricity that it takes at part load, the same way.
+    PartLoad,
+    /// Greatest output that it gives in the cold, the same way.
+    OutputInCold,
     /// How far the choice's loop falls for each kilowatt drawn, as a multiple of its design, where the loop is known by that alone.
     LoopResistance,
     /// Length of the choice's bores or trenches, m, all longer or shorter alike.
@@ -61,6 +68,9 @@ impl Lever {
         Self::HotWater,
         Self::RatedOutput,
         Self::FieldFactor,
+        Self::HighLift,
+        Self::PartLoad,
+        Self::OutputInCold,
         Self::LoopResistance,
         Self::LoopLength,
         Self::Capital,
@@ -80,6 +90,9 @@ impl Lever {
             Self::HotWater => "hot water",
             Self::RatedOutput => "rated output",
             Self::FieldFactor => "share of laboratory performance kept",
+            Self::HighLift => "electricity at a high lift",
+            Self::PartLoad => "electricity at part load",
+            Self::OutputInCold => "output in the cold",
             Self::LoopResistance => "loop resistance",
             Self::LoopLength => "loop length",
             Self::Capital => "capital",
@@ -102,6 +115,7 @@ impl Lever {
             Self::RatedOutput => "kW",
             Self::LoopLength => "m",
             Self::FieldFactor | Self::Capital | Self::Grant => "",
+            Self::HighLift | Self::PartLoad | Self::OutputInCold => "× the sheet's",
             _ => "× today's",
         }
     }
@@ -146,6 +160,7 @@ impl Lever {
                 ((SIZES.0 * load_kw).min(now), (SIZES.1 * load_kw).max(now))
             }
             Self::FieldFactor => (0.6, 1.0),
+            Self::HighLift | Self::PartLoad | Self::OutputInCold => (0.8, 1.25),
             Self::LoopResistance => (0.25, 4.0),
             Self::LoopLength => (0.5 * now, 2.0 * now),
             Self::Capital => (0.0, CAPITAL * now),
@@ -181,6 +196,8 @@ impl Lever {
             Self::FieldFactor => named(bounds::FIELD_FACTOR),
             Self::HeatLoss | Self::LoopResistance => from_to(0.01, 100.0),
             Self::BoilerEfficiency => from_to(0.5, 1.5),
+            // At the greatest lift a doubt counts nearly twice: no electricity becomes negative.
+            Self::HighLift | Self::PartLoad | Self::OutputInCold => from_to(0.6, 1.4),
             Self::LoopLength => from_to(1.0, 10_000.0),
             Self::ElectricityRate | Self::FuelRate | Self::HotWater | Self::ElectricityCarbon => {
                 from_to(0.0, 100.0)
@@ -279,6 +296,8 @@ impl Lever {
             (Self::Indoor, _) => Some(contender.indoor_c),
             (Self::RatedOutput, Some(system)) => Some(system.machine.rated_output_kw()),
             (Self::FieldFactor, Some(system)) => Some(system.machine.field_factor()),
+            (Self::HighLift | Self::OutputInCold, Some(_)) => Some(1.0),
+            (Self::PartLoad, Some(system)) => system.machine.turns_down().then_some(1.0),
             (Self::LoopResistance, Some(system)) => {
                 matches!(system.source, Source::Ground(_)).then_some(1.0)
             }
@@ -287,7 +306,13 @@ impl Lever {
                 _ => None,
             },
             (
-                Self::RatedOutput | Self::FieldFactor | Self::LoopResistance | Self::LoopLength,
+                Self::RatedOutput
+                | Self::FieldFactor
+                | Self::HighLift
+                | Self::PartLoad
+                | Self::OutputInCold
+                | Self::LoopResistance
+                | Self::LoopLength,
                 _,
             ) => None,
             (Self::Capital, _) => contender
@@ -319,11 +344,24 @@ impl Lever {
             Self::FlowTemperature
             | Self::RatedOutput
             | Self::FieldFactor
+            | Self::HighLift
+            | Self::PartLoad
+            | Self::OutputInCold
             | Self::LoopResistance
             | Self::LoopLength => Again::Choice,
             Self::HeatLoss | Self::Indoor | Self::HotWater | Self::BoilerEfficiency => {
                 Again::Everyone
             }
+        }
+    }
+
+    /// What it doubts about a sheet; nothing for a lever that doubts no sheet.
+    pub(super) fn doubted(self, doubts: &mut SheetDoubts) -> Option<&mut f64> {
+        match self {
+            Self::HighLift => Some(&mut doubts.electricity_at_high_lift),
+            Self::PartLoad => Some(&mut doubts.electricity_at_part_load),
+            Self::OutputInCold => Some(&mut doubts.output_in_cold),
+            _ => None,
         }
     }
 }

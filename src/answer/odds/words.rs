@@ -79,6 +79,9 @@ pub(super) fn plain(lever: Lever) -> &'static str {
         Lever::HotWater => "how much hot water is used",
         Lever::RatedOutput => "the output of the machine",
         Lever::FieldFactor => "how well the machine runs in a home",
+        Lever::HighLift => "what the machine takes in the cold and at hot flows",
+        Lever::PartLoad => "what the machine takes at part load",
+        Lever::OutputInCold => "what the machine gives in the cold",
         Lever::LoopResistance => "how well the ground gives its heat",
         Lever::LoopLength => "the length of the loop",
         Lever::Capital => "what it costs to put in",
@@ -99,6 +102,13 @@ pub(super) fn found_by(lever: Lever) -> Option<&'static str> {
         Lever::RatedOutput => Some("the datasheet of the machine that is quoted"),
         Lever::FieldFactor => {
             Some("heat-meter readings of homes with the same machine and installer")
+        }
+        Lever::HighLift => {
+            Some("test reports at the cold and at the flow temperature of this home")
+        }
+        Lever::PartLoad => Some("the part-load points of the machine's test report"),
+        Lever::OutputInCold => {
+            Some("the output at the design temperature in the machine's test report")
         }
         Lever::LoopResistance => Some("a thermal response test of the ground"),
         Lever::LoopLength => Some("the loop designer's quote"),

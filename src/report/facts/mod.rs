@@ -93,8 +93,10 @@ pub(super) fn facts(material: &Material<'_>) -> Value {
     let peaks = estimate.systems.iter().map(|s| s.peak_electric_kw);
     put("peak_kw", json!(peaks.fold(0.0, f64::max)));
     if let Some((hour, in_the_hour)) = coldest(material) {
+        let all = in_the_hour.iter().enumerate();
+        let shown = all.filter(|(i, _)| front.contains(i)).map(|(_, s)| s);
         let (todays, others): (Vec<&Value>, Vec<&Value>) =
-            in_the_hour.iter().partition(|s| s["today"] == true);
+            shown.partition(|s| s["today"] == true);
         put("hour_groups", json!(self::groups(&todays, &others)));
         put("coldest", hour);
     }
