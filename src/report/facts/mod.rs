@@ -95,8 +95,7 @@ pub(super) fn facts(material: &Material<'_>) -> Value {
     if let Some((hour, in_the_hour)) = coldest(material) {
         let all = in_the_hour.iter().enumerate();
         let shown = all.filter(|(i, _)| front.contains(i)).map(|(_, s)| s);
-        let (todays, others): (Vec<&Value>, Vec<&Value>) =
-            shown.partition(|s| s["today"] == true);
+        let (todays, others): (Vec<&Value>, Vec<&Value>) = shown.partition(|s| s["today"] == true);
         put("hour_groups", json!(self::groups(&todays, &others)));
         put("coldest", hour);
     }
