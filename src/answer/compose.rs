@@ -143,6 +143,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         },
         systems,
         patterns: Vec::new(),
+        what_if: Vec::new(),
         break_even: break_evens,
         odds: None,
         lifetime: lifetime(case, outcomes),

@@ -9,6 +9,7 @@ use super::home::{DesignAnswer, MeteredAnswer, PatternComparison, RoomsAnswer, S
 use super::lifetime::LifetimeAnswer;
 use super::odds::OddsSummary;
 use super::weather_years::{YearAnswer, YearSpread};
+use super::what_if::WhatIf;
 use crate::problem::Finding;
 
 /// The comparison of all systems of a brief.
@@ -28,6 +29,9 @@ pub struct Estimate {
     /// How sure it is: chances from a modest sample; absent where none was drawn. The command `odds` says more.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub odds: Option<OddsSummary>,
+    /// What moves the saving of the choices that the report puts in front: the cheapest four. Absent where nothing asked for it.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub what_if: Vec<WhatIf>,
     /// Money and carbon over the years; absent where no choice's capital is known.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub lifetime: Option<LifetimeAnswer>,

@@ -5,12 +5,13 @@ use serde::Serialize;
 use super::comfort::leaves_cold;
 use super::compose::Told;
 use super::estimate::{Assumption, LeverAnswer};
-use super::lever::{condition, lever_answer, price_unit, unit};
+use super::lever::{lever_answer, price_unit, unit};
 use super::lifetime::{LifetimeAnswer, lifetime};
+use super::what_if::{EmitterAnswer, SwingAnswer, emitters, moved};
 use crate::problem::{Finding, Problems};
 use crate::study::{
     Applies, Case, Lever, MachineSize, MachineSizes, Measure, Outcome, Pair, break_even,
-    break_even_spf, emitter_sizes, machine_sizes, swings, two_levers,
+    break_even_spf, machine_sizes, two_levers,
 };
 
 /// What would change the answer, choice by choice.
@@ -71,29 +72,6 @@ pub struct SpfAnswer {
     pub spf_h4: Option<f64>,
     /// The same as a sentence.
     pub sentence: String,
-}
-
-/// The choice with emitters for one design flow temperature.
-#[derive(Debug, Clone, PartialEq, Serialize)]
-pub struct EmitterAnswer {
-    /// Design flow temperature.
-    pub flow_c: f64,
-    /// Output the emitters need (EN 442, ΔT 50 K), as a multiple of today's.
-    pub times_today_output: f64,
-    /// Whether the machine reaches that flow on the design day.
-    pub reached: bool,
-    /// Yearly cost; absent where the flow is not reached, like what follows.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub cost: Option<f64>,
-    /// Today's yearly cost less it.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub saving: Option<f64>,
-    /// SPF with all auxiliaries.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub spf_h4: Option<f64>,
-    /// Hours short of heat.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub hours_short: Option<f64>,
 }
 
 /// A sweep over sizes.
@@ -170,29 +148,6 @@ pub struct AxisAnswer {
     pub price_unit: Option<String>,
 }
 
-/// One lever from low to high.
-#[derive(Debug, Clone, PartialEq, Serialize)]
-pub struct SwingAnswer {
-    /// The lever.
-    pub lever: String,
-    /// Its unit.
-    pub unit: String,
-    /// Low value.
-    pub low: f64,
-    /// High value.
-    pub high: f64,
-    /// Low value in words.
-    pub low_words: String,
-    /// High value in words.
-    pub high_words: String,
-    /// Yearly saving at the low value.
-    pub saving_at_low: f64,
-    /// Yearly saving at the high value.
-    pub saving_at_high: f64,
-    /// Where the spread is from.
-    pub from: String,
-}
-
 /// What is to be looked at.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Wish {
@@ -236,7 +191,6 @@ fn study(pair: &Pair, wish: &Wish) -> Result<ChoiceStudy, Problems> {
         levers.extend(found.iter().map(|found| lever_answer(found, pair)));
     }
     let [today, choice] = pair.outcomes();
-    let emitters = emitter_sizes(pair)?;
     Ok(ChoiceStudy {
         label: pair.choice().system.label.clone(),
         cost: choice.costs.total,
@@ -244,47 +198,11 @@ fn study(pair: &Pair, wish: &Wish) -> Result<ChoiceStudy, Problems> {
         leaves_cold: leaves_cold(pair.choice(), choice),
         break_even: levers,
         break_even_spf: spf(pair),
-        emitters: (!emitters.is_empty()).then(|| {
-            let answers = emitters.iter().map(|size| EmitterAnswer {
-                flow_c: size.flow_c,
-                times_today_output: size.times_today,
-                reached: size.year.is_some(),
-                cost: size.year.map(|year| year.cost),
-                saving: size.year.map(|year| year.saving),
-                spf_h4: size.year.and_then(|year| year.spf_h4),
-                hours_short: size.year.map(|year| year.hours_short),
-            });
-            answers.collect()
-        }),
+        emitters: emitters(pair)?,
         sizes: machine_sizes(pair)?.map(|sizes| sizes_answer(pair, &sizes)),
         two_levers: together(pair, wish)?,
-        swings: swings(pair, Measure::YearlyCost)?
-            .iter()
-            .map(|swing| SwingAnswer {
-                lever: swing.lever.name().to_owned(),
-                unit: unit(swing.lever, pair),
-                low: swing.spread.low,
-                high: swing.spread.high,
-                low_words: condition(swing.lever, swing.now, swing.spread.low, pair),
-                high_words: condition(swing.lever, swing.now, swing.spread.high, pair)
-                    + at_its_limit(swing.lever, swing.now, swing.spread.high),
-                saving_at_low: swing.at_low,
-                saving_at_high: swing.at_high,
-                from: swing.spread.from.to_owned(),
-            })
-            .collect(),
+        swings: moved(pair)?,
     })
-}
-
-/// Why the upper end of a swing is where the lever stands: hotter water the machine does not make.
-fn at_its_limit(lever: Lever, now: f64, high: f64) -> &'static str {
-    /// Below this the two are written alike, K.
-    const ALIKE_K: f64 = 0.05;
-    if lever == Lever::FlowTemperature && (high - now).abs() < ALIKE_K {
-        ": the machine makes no hotter"
-    } else {
-        ""
-    }
 }
 
 fn spf(pair: &Pair) -> Option<SpfAnswer> {

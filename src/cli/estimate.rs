@@ -5,18 +5,19 @@ use std::path::{Path, PathBuf};
 
 use super::progress::Progress;
 use super::sampling::draw;
-use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
+use super::{
+    Failure, Format, NewFile, check_folder, picture_files, print, print_json, warn_in, write_files,
+};
 use crate::answer::odds::summary;
-use crate::answer::{Estimate, compare_patterns, compose};
+use crate::answer::{Estimate, compare_patterns, compose, what_if};
 use crate::brief::{Brief, DEFAULTS};
-use crate::chart::ChartError;
 use crate::home::Pattern;
-use crate::locale::Marks;
+use crate::locale::Locale;
 use crate::problem::Problems;
 #[cfg(feature = "pdf")]
 use crate::report::report_pdf;
 use crate::report::{
-    Drawn, Material, accounts_text, estimate_text, home_text, ledger_csv, odds_pictures,
+    Material, accounts_text, estimate_text, home_text, in_front, ledger_csv, odds_pictures,
     patterns_text, pictures, report_html,
 };
 use crate::study::odds::{Sample, Sampler};
@@ -130,6 +131,11 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     if args.patterns {
         estimate.patterns = compare_patterns(&brief.case, &usual_pattern())?;
     }
+    if args.out.is_some() || matches!(args.format, Format::Json) {
+        progress.at("what would change it");
+        let choices = in_front(&estimate).into_iter().filter(|place| *place > 0);
+        estimate.what_if = what_if(&brief.case, &outcomes, &choices.collect::<Vec<_>>())?;
+    }
     if let Some(folder) = &args.out {
         progress.at("pictures and report");
         let material = Material {
@@ -146,11 +152,11 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         write_files(&files, args.force)?;
     }
     progress.done();
-    warn(&estimate.findings);
+    warn_in(&estimate.findings, &brief.locale, &estimate.currency);
     match args.format {
         Format::Json => print_json(&estimate),
         Format::Text => {
-            let mut text = text(&estimate, &brief.locale.marks, args);
+            let mut text = text(&estimate, &brief.locale, args);
             if args.bills {
                 text += &format!("\n\n{}", accounts(&estimate, &brief, &outcomes)?);
             }
@@ -206,22 +212,19 @@ fn files(
     if material.estimate.weather.part_year_days.is_some() {
         return Ok(files);
     }
+    let shown = in_front(material.estimate);
     let mut drawn = pictures(material)?;
     if let Some(blocks) = samples {
-        drawn.extend(odds_pictures(case, blocks, &material.locale)?);
+        drawn.extend(odds_pictures(case, blocks, &shown, &material.locale)?);
     }
-    for (drawn, png) in drawn.iter().zip(pngs(&drawn)?) {
-        let path = |ending: &str| folder.join(format!("{}.{ending}", drawn.name));
-        files.push(NewFile::new(path("svg"), drawn.picture.svg()?));
-        files.push(NewFile::new(path("png"), png));
-    }
+    files.extend(picture_files(folder, &drawn)?);
     let locale = material.locale.on_a_phone();
     let mut phone = pictures(&Material {
         locale,
         ..*material
     })?;
     if let Some(blocks) = samples {
-        phone.extend(odds_pictures(case, blocks, &locale)?);
+        phone.extend(odds_pictures(case, blocks, &shown, &locale)?);
     }
     let page = report_html(material, &drawn, &phone)?;
     files.push(NewFile::new(folder.join(REPORT), page));
@@ -233,8 +236,8 @@ fn files(
     Ok(files)
 }
 
-fn text(estimate: &Estimate, marks: &Marks, args: &Args) -> String {
-    let mut text = estimate_text(estimate, marks, args.assumptions);
+fn text(estimate: &Estimate, locale: &Locale, args: &Args) -> String {
+    let mut text = estimate_text(estimate, locale, args.assumptions);
     if args.home {
         text += &format!("\n\n{}", home_text(estimate));
     }
@@ -255,24 +258,6 @@ fn usual_pattern() -> Pattern {
         pattern.weekend_c[hour] = if (7..23).contains(&hour) { 20.0 } else { 16.0 };
     }
     pattern
-}
-
-/// The pictures as PNG, painted side by side: at print resolution that is the longest part of the work.
-fn pngs(drawn: &[Drawn]) -> Result<Vec<Vec<u8>>, ChartError> {
-    let hands = std::thread::available_parallelism().map_or(1, usize::from);
-    let share = drawn.len().div_ceil(hands).max(1);
-    let painted = std::thread::scope(|scope| {
-        let workers: Vec<_> = drawn
-            .chunks(share)
-            .map(|part| scope.spawn(|| part.iter().map(|d| d.picture.png()).collect::<Vec<_>>()))
-            .collect();
-        let done = workers.into_iter().map(|worker| worker.join());
-        done.collect::<Result<Vec<_>, _>>()
-    });
-    match painted {
-        Ok(parts) => parts.into_iter().flatten().collect(),
-        Err(_) => Err(ChartError::Drawing("a picture was not finished".into())),
-    }
 }
 
 fn cannot_write(folder: &std::path::Path, error: &dyn Error) -> Failure {

@@ -3,10 +3,12 @@
 use std::path::PathBuf;
 
 use super::sampling::{Stop, draw};
-use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
+use super::{
+    Failure, Format, NewFile, check_folder, picture_files, print, print_json, warn_in, write_files,
+};
 use crate::answer::odds::{OddsAnswer, Wish, odds};
 use crate::brief::Brief;
-use crate::report::{Drawn, odds_pictures, odds_text, samples_csv, spread_picture};
+use crate::report::{odds_pictures, odds_text, samples_csv, spread_picture};
 use crate::study::odds::{Sample, Sampler};
 
 /// Samples of a block: whole blocks are drawn, their scatter gives the sampling errors. Many small blocks tell an error better than few
@@ -94,7 +96,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         ));
     };
     answer.findings.extend(brief.told.findings.iter().cloned());
-    warn(&answer.findings);
+    warn_in(&answer.findings, &brief.locale, &answer.currency);
     if let Some(folder) = &args.out {
         let files = files(folder, &answer, &sampler, &drawing.blocks, &brief);
         let files = files.map_err(|error| Failure::Write {
@@ -105,7 +107,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
     match args.format {
         Format::Json => print_json(&answer)?,
-        Format::Text => print(&odds_text(&answer, &brief.locale.marks))?,
+        Format::Text => print(&odds_text(&answer, &brief.locale))?,
     }
     if drawing.interrupted {
         return Err(Failure::Interrupted {
@@ -130,12 +132,9 @@ fn files(
             samples_csv(&brief.case, sampler, blocks)?,
         ),
     ];
-    let mut drawn = odds_pictures(&brief.case, blocks, &brief.locale)?;
+    let all: Vec<usize> = (0..brief.case.contenders.len()).collect();
+    let mut drawn = odds_pictures(&brief.case, blocks, &all, &brief.locale)?;
     drawn.extend(spread_picture(answer, &brief.locale)?);
-    for Drawn { name, picture, .. } in drawn {
-        let path = |ending: &str| folder.join(format!("{name}.{ending}"));
-        files.push(NewFile::new(path("svg"), picture.svg()?));
-        files.push(NewFile::new(path("png"), picture.png()?));
-    }
+    files.extend(picture_files(folder, &drawn)?);
     Ok(files)
 }

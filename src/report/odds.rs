@@ -4,19 +4,21 @@ use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
 use crate::answer::odds::{Matters, OddsAnswer};
 use crate::answer::short;
-use crate::locale::Marks;
+use crate::locale::Locale;
 
 /// Share of the spread from which a lever has a line of its own: below it rounds to 0 %.
 const SAID: f64 = 0.005;
 
-/// The odds as text for a terminal of 80 columns or more, with the marks of a place.
-pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
-    let whole = |value: f64| marks.number(value, 0);
+/// The odds as text for a terminal of 80 columns or more, in the form of a place.
+pub fn odds_text(answer: &OddsAnswer, locale: &Locale) -> String {
+    let marks = &locale.marks;
+    let told = |sentence: &str| locale.told(sentence, &answer.currency);
+    let money = |amount: f64| marks.money(&answer.currency, amount);
     let mut blocks: Vec<String> = vec![
         answer
             .choices
             .iter()
-            .map(|choice| wrapped(&marks.localized(&choice.sentence), "", "  "))
+            .map(|choice| wrapped(&told(&choice.sentence), "", "  "))
             .collect::<Vec<_>>()
             .join("\n"),
     ];
@@ -27,9 +29,9 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
                 Some(_) => format!("{} (too cold)", choice.label),
                 None => choice.label.clone(),
             },
-            whole(choice.saving.p10),
-            whole(choice.saving.p50),
-            whole(choice.saving.p90),
+            money(choice.saving.p10),
+            money(choice.saving.p50),
+            money(choice.saving.p90),
             choice.spf_h4.map_or_else(
                 || "–".to_owned(),
                 |spf| format!("{}–{}", marks.number(spf.p10, 1), marks.number(spf.p90, 1)),
@@ -47,21 +49,21 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     ];
     blocks.push(plain_table_within(WIDTH, header, rows));
     if !answer.what_matters.is_empty() {
-        let (told, hardly): (Vec<&Matters>, Vec<&Matters>) = answer
+        let (great, hardly): (Vec<&Matters>, Vec<&Matters>) = answer
             .what_matters
             .iter()
             .partition(|one| one.share >= SAID);
-        let lines = told.iter().map(|one| {
+        let lines = great.iter().map(|one| {
             let turns = one.turns_with.as_ref().map_or_else(
                 || "does not turn the answer".to_owned(),
-                |with| format!("turns with {}", marks.localized(with)),
+                |with| format!("turns with {}", told(with)),
             );
             let swing = match (one.saving_at_low, one.saving_at_high) {
                 (Some(low), Some(high)) => {
                     format!(
-                        "by it alone a saving of {} to {} {code}, ",
-                        whole(low),
-                        whole(high)
+                        "by it alone a saving of {} to {}, ",
+                        money(low),
+                        money(high)
                     )
                 }
                 _ => String::new(),
@@ -98,7 +100,7 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
         blocks.push(lines.collect::<Vec<_>>().join("\n"));
     }
     blocks.push(wrapped(&answer.not_drawn, "", "  "));
-    blocks.push(wrapped(&marks.localized(&answer.find_out), "", "  "));
+    blocks.push(wrapped(&told(&answer.find_out), "", "  "));
     let ranges = answer.uncertain.iter().map(|one| {
         let line = format!(
             "{} {} to {} {}: {}",

@@ -35,6 +35,7 @@ sections! {
     "change", "What would change it";
     "next", "What to find out next";
     "odds", "How sure it is";
+    "levers", "What you could change";
     "home", "The home";
     "weather", "The weather, and how good it is";
     "systems", "Each system";
@@ -109,6 +110,12 @@ fn environment<'a>(material: &Material<'_>, drawn: &[Drawn]) -> Result<Environme
         .iter()
         .map(|drawn| (drawn.name.clone(), drawn.caption.clone()))
         .collect();
+    let there: Vec<String> = captions.keys().cloned().collect();
+    environment.add_function("abreast", move |names: Vec<String>| {
+        let names = names.iter().filter(|name| there.contains(name));
+        let pictures: String = names.map(|name| format!("![]({name})")).collect();
+        Value::from_safe_string(format!("\n{pictures}\n"))
+    });
     environment.add_function("picture", move |name: String| {
         Value::from_safe_string(match captions.get(&name) {
             Some(caption) => format!("\n![{}]({name})\n", escaped(caption)),
@@ -125,6 +132,7 @@ fn environment<'a>(material: &Material<'_>, drawn: &[Drawn]) -> Result<Environme
 
 fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str) {
     let marks = locale.marks;
+    let of_the_place = currency.to_owned();
     let currency = currency.to_owned();
     let money = move |amount: f64, decimals: usize| marks.money_to(&currency, amount, decimals);
     // What is missing is told by a dash, never by a nought.
@@ -193,10 +201,17 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
             }
         },
     );
-    environment.add_filter("localized", move |text: &str| marks.localized(text));
+    environment.add_filter("localized", move |text: &str| {
+        locale.told(text, &of_the_place)
+    });
     environment.add_filter("file", |text: &str| file(text));
     environment.add_filter("short", |text: &str| short(text));
-    environment.add_filter("words", |text: &str| text.replace(['.', '_'], " "));
+    environment.add_filter("capitalized", |text: &str| {
+        let mut letters = text.chars();
+        letters.next().map_or_else(String::new, |first| {
+            first.to_uppercase().chain(letters).collect::<String>()
+        })
+    });
     environment.add_filter("either", move |parts: Vec<String>| {
         let parts: Vec<_> = parts.iter().map(|part| marks.localized(part)).collect();
         match parts.split_last() {

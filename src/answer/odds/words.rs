@@ -20,7 +20,10 @@ pub(super) fn in_words(
     let side = |value: f64| if value < 0.0 { "dearer" } else { "cheaper" };
     let between = if side(low) == side(high) {
         let (least, most) = (low.abs().min(high.abs()), low.abs().max(high.abs()));
-        format!("between {least:.0} and {most:.0} {code} {}", side(low))
+        format!(
+            "between {least:.0} {code} and {most:.0} {code} {}",
+            side(low)
+        )
     } else {
         format!(
             "between {:.0} {code} {} and {high:.0} {code} {}",
@@ -203,11 +206,11 @@ mod tests {
         );
         assert_eq!(
             in_words(("Ground", None), 0.99, between(191.0, 443.0), "GBP"),
-            "Ground: a near certainty of being cheaper than today; between 190 and 440 GBP cheaper a year in eight cases of ten."
+            "Ground: a near certainty of being cheaper than today; between 190 GBP and 440 GBP cheaper a year in eight cases of ten."
         );
         assert_eq!(
             in_words(("Direct", None), 0.01, between(-443.0, -191.0), "GBP"),
-            "Direct: hardly a chance of being cheaper than today; between 190 and 440 GBP dearer a year in eight cases of ten."
+            "Direct: hardly a chance of being cheaper than today; between 190 GBP and 440 GBP dearer a year in eight cases of ten."
         );
     }
 }

@@ -1,6 +1,8 @@
 //! What the sentences may speak of: the estimate as its JSON has it, and beside it what case and ledgers add.
 
 mod hour;
+mod levers;
+mod names;
 mod next;
 mod sources;
 mod system;
@@ -8,7 +10,7 @@ mod system;
 use serde::Serialize;
 use serde_json::{Map, Value, json};
 
-use super::pictures::Material;
+use super::pictures::{Material, in_front};
 use crate::answer::lifetime::SystemLifetime;
 use hour::coldest;
 use next::next_steps;
@@ -29,8 +31,13 @@ pub(super) fn facts(material: &Material<'_>) -> Value {
     let estimate = material.estimate;
     let mut facts = object(estimate);
     let odds = facts.get("odds").cloned().unwrap_or_default();
+    let front = in_front(estimate);
     let systems: Vec<Value> = (0..estimate.systems.len())
-        .map(|i| with_odds(system(material, i), &odds))
+        .map(|i| {
+            let mut facts = with_odds(system(material, i), &odds);
+            facts["in_front"] = json!(front.contains(&i));
+            facts
+        })
         .collect();
     let (today, mut choices): (Vec<&Value>, Vec<&Value>) =
         systems.iter().partition(|s| s["today"] == true);
@@ -76,15 +83,26 @@ pub(super) fn facts(material: &Material<'_>) -> Value {
         "nearest",
         json!(choices.iter().take(NEAREST).collect::<Vec<_>>()),
     );
+    for (name, value) in levers::facts(estimate, &choices) {
+        put(name, value);
+    }
     put("next_steps", next_steps(&choices, estimate));
+    let behind: Vec<String> = systems
+        .iter()
+        .filter(|s| s["in_front"] == false)
+        .map(|s| format!("{}. {}", s["number"], s["label"].as_str().unwrap_or("")))
+        .collect();
+    put("behind", json!(behind.join(", ")));
+    put("odds_depend", odds_depend(&choices));
     put("choices", json!(choices));
     put("groups", json!(groups));
     put("several_years", json!(estimate.weather.years > 1));
     let peaks = estimate.systems.iter().map(|s| s.peak_electric_kw);
     put("peak_kw", json!(peaks.fold(0.0, f64::max)));
     if let Some((hour, in_the_hour)) = coldest(material) {
-        let (todays, others): (Vec<&Value>, Vec<&Value>) =
-            in_the_hour.iter().partition(|s| s["today"] == true);
+        let all = in_the_hour.iter().enumerate();
+        let shown = all.filter(|(i, _)| front.contains(i)).map(|(_, s)| s);
+        let (todays, others): (Vec<&Value>, Vec<&Value>) = shown.partition(|s| s["today"] == true);
         put("hour_groups", json!(self::groups(&todays, &others)));
         put("coldest", hour);
     }
@@ -121,6 +139,29 @@ fn with_odds(mut system: Value, odds: &Value) -> Value {
         facts.insert("odds".to_owned(), found);
     }
     system
+}
+
+/// What the odds depend on, the choices of which the same is said together.
+fn odds_depend(choices: &[&Value]) -> Value {
+    let mut groups: Vec<(&str, Vec<&str>)> = Vec::new();
+    for choice in choices {
+        let (Some(words), Some(label)) = (
+            choice["odds"]["depends_on"].as_str(),
+            choice["label"].as_str(),
+        ) else {
+            continue;
+        };
+        match groups.iter_mut().find(|(said, _)| *said == words) {
+            Some((_, labels)) => labels.push(label),
+            None => groups.push((words, vec![label])),
+        }
+    }
+    let groups = groups.iter().map(|(words, labels)| {
+        let rest = words.strip_prefix("It ");
+        let words = rest.map_or_else(|| (*words).to_owned(), |rest| format!("it {rest}"));
+        json!({ "words": words, "labels": labels.join("; ") })
+    });
+    json!(groups.collect::<Vec<_>>())
 }
 
 /// Anything as a JSON object; what is no object is an empty one.
