@@ -40,6 +40,7 @@ impl Table {
     }
 
     /// Saturation pressure at a temperature, Pa; nothing outside the table.
+    #[inline]
     fn at(&self, temperature_c: f64) -> Option<f64> {
         let steps = (temperature_c - LOW_C) * PER_K;
         // Below the table and NaN become 0, which the range then refuses.
@@ -51,6 +52,7 @@ impl Table {
 }
 
 /// Humidity ratio at sea level of air saturated over ice at a temperature (°C), kg/kg; not a number outside −100 to 200 °C.
+#[inline]
 pub fn humidity_ratio_over_ice(temperature_c: f64) -> f64 {
     let tabulated = ICE.at(temperature_c);
     let pressure_pa =
@@ -66,6 +68,7 @@ pub fn tabulated_saturation_pressure_pa(temperature_c: f64) -> f64 {
 
 /// Humidity ratio at sea level of air as a weather station states it, kg/kg: temperature (°C) and relative humidity (0 to 1) over
 /// liquid water, see [`MoistAir::at_station`](super::MoistAir::at_station); not a number outside −100 to 99 °C.
+#[inline]
 pub fn humidity_ratio_at_station(temperature_c: f64, relative_humidity: f64) -> f64 {
     let saturated_pa = tabulated_saturation_pressure_pa(temperature_c);
     if saturated_pa < SEA_LEVEL_PA {

@@ -105,15 +105,22 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         }
         system.shifting = shifting_answer(case, contender)?;
         findings.extend(signal_gap(contender, outcome)?);
+        system.ground = ground_shown(case, contender, outcome)?;
         findings.extend(shortfalls(&system));
         findings.extend(water_beyond_reach(contender, outcome));
         findings.extend(hot_discharge(contender, outcome, &system));
-        system.ground = ground_shown(case, contender, outcome)?;
         findings.extend(source_too_cold(&system));
         systems.push(system);
     }
     let site = &case.site;
     let today = &case.contenders[0];
+    let metered = told
+        .bills
+        .as_ref()
+        .map(|bills| metered(bills, case, &outcomes[0]));
+    if let (Some(metered), Some(bills)) = (&metered, &told.bills) {
+        findings.extend(disagreement(metered, &bills.signature));
+    }
     let fabric = &today.system.home.fabric;
     Ok(Estimate {
         weather: WeatherUsed {
@@ -132,10 +139,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
             design_heat_load_kw: today.design_load_kw,
             transmission_w_per_k: told.parts_w_per_k.map(|parts| parts.0),
             ventilation_w_per_k: told.parts_w_per_k.map(|parts| parts.1),
-            metered: told
-                .bills
-                .as_ref()
-                .map(|bills| metered(bills, case, &outcomes[0])),
+            metered,
         },
         systems,
         patterns: Vec::new(),
@@ -261,6 +265,7 @@ fn system(
             .map(|year| year.peak_electric_kw)
             .fold(0.0, f64::max),
         hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
+        hours_stopped: is_machine.then(|| outcome.mean(|year| f64::from(year.hours_stopped))),
         hours_short: outcome.mean(|year| f64::from(year.hours_short)),
         hours_water_short: outcome.mean(|year| f64::from(year.hours_water_short)),
         pattern: contender.pattern.words(),
@@ -366,6 +371,19 @@ fn shortfalls(system: &SystemAnswer) -> Vec<Finding> {
             Severity::Warning,
             format!("\"{label}\" gives hot water that is too cool in {:.0} hours a year", system.hours_water_short),
             "a larger store, a higher set point, longer reheat windows or more output would be needed",
+        ));
+    }
+    let stopped = system
+        .hours_stopped
+        .filter(|&hours| hours >= 0.5 && system.ground.is_none());
+    if let Some(hours) = stopped {
+        found.push(Finding::new(
+            Severity::Caution,
+            format!(
+                "the machine of \"{label}\" stands in {hours:.0} hours a year because its source is outside its limits; backup and immersion heater use {:.0} kWh",
+                system.backup_kwh.unwrap_or(0.0)
+            ),
+            "a machine made for such weather, or backup for the whole load of those hours, would be needed",
         ));
     }
     if !system.design.covered {
@@ -610,6 +628,33 @@ fn metered(bills: &BillsTold, case: &Case, today: &Outcome) -> MeteredAnswer {
         scaled_by: bills.scaled_by,
         sentence,
     }
+}
+
+/// A meter and a model that are further apart than the limits of both explain.
+fn disagreement(metered: &MeteredAnswer, signature: &Signature) -> Option<Finding> {
+    let half_meter = (metered.metered_95[1] - metered.metered_95[0]) / 2.0;
+    let loss = signature.heat_loss();
+    // Fuel rises with the heat loss no faster than in proportion.
+    let half_model = metered.modelled_kwh * loss.half() / loss.value;
+    let apart = (metered.modelled_kwh - metered.metered_kwh).abs();
+    if metered.scaled_by.is_some() || apart <= half_meter.hypot(half_model) {
+        return None;
+    }
+    let warmer = signature.own_home.as_ref().map_or_else(String::new, |own| {
+        format!(
+            "; the readings fit rooms {:+.1} K against the brief and {:.1} kWh a day beside heating",
+            own.warmer_k.value, own.base_load_kwh_per_day.value
+        )
+    });
+    Some(Finding::new(
+        Severity::Caution,
+        format!(
+            "today's fuel is {:.0} kWh by the meter and {:.0} kWh modelled ({:+.0} %), more apart than the limits explain{warmer}",
+            metered.metered_kwh, metered.modelled_kwh, metered.difference_percent
+        ),
+        "bills and savings are those of the modelled fuel: write scale = true under [home.bills] to follow the meter, or look at \
+         efficiency, set points, gains and hot water",
+    ))
 }
 
 /// Every system all day at its set point beside a set-back: its own, else today's, else `usual`.

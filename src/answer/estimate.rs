@@ -183,6 +183,9 @@ pub struct SystemAnswer {
     pub hours_backup: f64,
     /// Hours that ended more than 1 K below the set point.
     pub hours_short: f64,
+    /// Hours a year in which the machine stood because its source was outside its limits.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub hours_stopped: Option<f64>,
     /// Hours in which hot water came out too cool.
     pub hours_water_short: f64,
     /// Lowest indoor temperature of all years.

@@ -157,7 +157,7 @@ pub struct SizingAnswer {
 
 /// What every loop is told with.
 pub const GROUND_CAUTION: &str = "A figure for a decision, not a loop design: ground differs from its class, and neighbours' loops count. \
-Design, drilling, excavation, antifreeze and permits belong to licensed people and local rules; a test in the ground comes before a field is drilled.";
+Ethylene glycol is poisonous. Design, drilling, excavation, antifreeze and permits belong to licensed people and local rules; a test in the ground comes before a field is drilled.";
 
 /// Makes the answer of one ground source; nothing for a system without one.
 pub fn ground_answer(

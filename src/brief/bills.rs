@@ -10,15 +10,12 @@ use super::files::Folder;
 use super::home::WeatherFacts;
 use super::leaves::HeatLossSource;
 use super::notes::Notes;
-use super::own_home::{OwnHomeModel, Today};
+use super::own_home::{Today, Within, doubt, line, through_own_home};
 use super::raw;
 use crate::bounds;
 use crate::document::{Check, Document, Leaf, Section, read_text};
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
-use crate::signature::{
-    Conversion, DailyWeather, Doubt, FitProblem, Interval, Readings, Signature, Stated, fit,
-    fit_own_home,
-};
+use crate::signature::{Conversion, DailyWeather, FitProblem, Readings, Signature, Stated};
 use crate::units::{CalorificValue, Fuel, Temperature, parse};
 use crate::weather::{ReadOptions, Weather, read_bytes};
 
@@ -120,10 +117,11 @@ pub(super) fn made(
             Ok(HeatLossSource::Stated(loss)) => Some(loss.w_per_k()),
             _ => None,
         });
-    let line = fit(&readings.intervals, &days, &stated);
+    let line = line(&readings.intervals, &days, &stated);
+    let (signature, open) = check.take(line.map_err(|why| told(why, name, &days)))?;
     let mut made = BillsMade {
         file: name.to_owned(),
-        signature: check.take(line.map_err(|why| told(why, name, &days)))?,
+        signature,
         scale,
         findings: Vec::new(),
         survey_w_per_k,
@@ -138,125 +136,17 @@ pub(super) fn made(
         through_own_home(&mut made, over, &weather, &within, check, notes)
             .map_err(|why| told(why, name, &days)),
     )?;
+    if let (Some(why), None) = (open, &made.signature.own_home) {
+        return check.take(Err(told(why, name, &days)));
+    }
     let signature = &made.signature;
     let mut findings = readings.findings;
+    findings.append(&mut made.findings.clone());
     findings.extend(odd(name, &readings.intervals, signature));
     findings.extend(implausible(name, signature, over, check));
     findings.extend(survey_w_per_k.and_then(|survey| apart(name, signature, survey)));
     made.findings = findings;
     Some(made)
-}
-
-/// Readings, their days, and what is known about them.
-struct Within<'a> {
-    intervals: &'a [Interval],
-    days: &'a DailyWeather,
-    stated: Stated,
-    doubt: DoubtOf,
-}
-
-/// Runs the home's own model over the readings, where the brief describes it.
-///
-/// Emitters are sized by the heat loss, and the heat loss is found with the boiler that heats them: twice is enough.
-fn through_own_home(
-    made: &mut BillsMade,
-    over: &Over<'_>,
-    weather: &Weather,
-    within: &Within<'_>,
-    check: &Check,
-    notes: &mut Notes,
-) -> Result<(), FitProblem> {
-    const ROUNDS: usize = 2;
-    let rounds = if made.survey_w_per_k.is_some() {
-        1
-    } else {
-        ROUNDS
-    };
-    let mut stated = within.stated;
-    for round in 1..=rounds {
-        let Some(model) = OwnHomeModel::new(over, weather, made, within.intervals, check) else {
-            return Ok(());
-        };
-        let found = made.signature.heat_loss().value;
-        if let Some(efficiency) = model.efficiency(made.survey_w_per_k.unwrap_or(found)) {
-            stated.efficiency = efficiency;
-            made.signature = fit(within.intervals, within.days, &stated)?;
-        }
-        let doubt = Doubt {
-            warmer_k: if model.has_base_temperature() {
-                within.doubt.base_k
-            } else {
-                within.doubt.warmer_k
-            },
-            sun: model.knows_sun().then_some(within.doubt.sun),
-        };
-        let own = fit_own_home(
-            within.intervals,
-            within.days,
-            &stated,
-            &doubt,
-            found,
-            &|tried| model.heating_kwh(tried, stated.efficiency),
-        )?;
-        made.signature.own_home = Some(own);
-        if round == rounds {
-            if model.burns() {
-                notes.add(
-                    "home.bills.efficiency",
-                    format!("{:.1} % gross", stated.efficiency * 100.0),
-                    "today's boiler as the estimate runs it, over the days of the readings",
-                );
-            }
-            notes.add(
-                "home.bills.indoor_within",
-                format!("{} K", doubt.warmer_k),
-                "set point and internal gains together, which readings do not tell apart",
-            );
-            if let Some(sun) = doubt.sun {
-                notes.add(
-                    "home.bills.sun_within",
-                    format!("{:.0} %", sun * 100.0),
-                    "windows, their side and shade",
-                );
-            }
-        }
-    }
-    Ok(())
-}
-
-/// What the home's model may be off by.
-#[derive(Clone, Copy)]
-struct DoubtOf {
-    warmer_k: f64,
-    /// The same where gains are what a base temperature says.
-    base_k: f64,
-    sun: f64,
-}
-
-fn doubt(table: Option<&Section<raw::BillsTable>>, check: &mut Check) -> Option<DoubtOf> {
-    // What is used of these is noted once it is known which of them the home has.
-    let mut aside = Notes::default();
-    let (no_k, no_share) = (None, None);
-    let indoor = table.map_or(&no_k, |table| &table.indoor_within);
-    let sun = table.map_or(&no_share, |table| &table.sun_within);
-    let warmer = aside.quantity(
-        check,
-        indoor,
-        &bounds::INDOOR_WITHIN_K,
-        &defaults::INDOOR_WITHIN,
-    )?;
-    let base = aside.quantity(
-        check,
-        indoor,
-        &bounds::INDOOR_WITHIN_K,
-        &defaults::BASE_WITHIN,
-    )?;
-    let sun = aside.quantity(check, sun, &bounds::SHARE, &defaults::SUN_WITHIN)?;
-    Some(DoubtOf {
-        warmer_k: warmer.k(),
-        base_k: base.k(),
-        sun: sun.fraction(),
-    })
 }
 
 fn conversion(
@@ -308,7 +198,8 @@ fn stated(
         .and_then(|today| today.efficiency.as_ref()?.value().ok().copied());
     let efficiency = match (efficiency_leaf, of_today) {
         (None, Some(today)) => Some(today),
-        _ => notes.word(check, efficiency_leaf, &defaults::BILLS_EFFICIENCY),
+        // Noted once it is known whether today's boiler gives its own.
+        _ => Notes::default().word(check, efficiency_leaf, &defaults::BILLS_EFFICIENCY),
     };
     let within = notes.quantity(
         check,
@@ -340,7 +231,7 @@ fn stated(
         "cold water at the temperature of the ground at 1 m, drawn at 40 °C",
     );
     Some(Stated {
-        efficiency: efficiency?.fraction(),
+        efficiency: efficiency?.of(Fuel::Gas)?.fraction(),
         efficiency_within: within?.fraction(),
         hot_water_share: share?.fraction(),
         hot_water_share_within: share_within?.fraction(),

@@ -27,6 +27,8 @@ pub struct SignaturePlot {
     pub heat_loss_w_per_k: f64,
     /// Its 95 % limits.
     pub heat_loss_95: (f64, f64),
+    /// Whether it is an effective coefficient, which holds how the sun goes with the cold.
+    pub is_effective: bool,
 }
 
 /// One interval between two readings.
@@ -66,7 +68,12 @@ pub fn signature_plot(data: &SignaturePlot, marks: &Marks) -> Result<Picture, Ch
     check(data)?;
     let title = "What the meter says about the home";
     let subtitle = format!(
-        "Heat loss {}\u{a0}W/K, with 95\u{a0}% confidence {} to {}\u{a0}W/K.",
+        "{} {}\u{a0}W/K, with 95\u{a0}% confidence {} to {}\u{a0}W/K.",
+        if data.is_effective {
+            "Effective loss, sun and all,"
+        } else {
+            "Heat loss of the home’s own model"
+        },
         marks.number(data.heat_loss_w_per_k, 0),
         marks.number(data.heat_loss_95.0, 0),
         marks.number(data.heat_loss_95.1, 0)
@@ -75,7 +82,7 @@ pub fn signature_plot(data: &SignaturePlot, marks: &Marks) -> Result<Picture, Ch
     let below = scene.heading(title, &subtitle);
     let mut entries = vec![
         (Swatch::Point(USUAL), "between two readings"),
-        (Swatch::Line(BROWN, Dash::Solid, 2.8), "fitted"),
+        (Swatch::Line(BROWN, Dash::Solid, 2.8), "straight fit"),
     ];
     if data.points.iter().any(|point| point.odd) {
         entries.insert(1, (Swatch::Point(ODD), "odd, kept in the fit"));
@@ -225,6 +232,7 @@ mod tests {
             base_temperature_c: 15.0,
             heat_loss_w_per_k: 205.0,
             heat_loss_95: (180.0, 230.0),
+            is_effective: false,
         };
         let picture = signature_plot(&data, &Marks::default()).unwrap();
         assert!(

@@ -9,14 +9,19 @@ use crate::chart::Marks;
 use crate::report::signature_picture;
 use crate::signature::Signature;
 
-/// Heat-loss coefficient, base temperature and base load from meter readings.
+/// The heat loss at which the home of a brief uses what was metered, and a straight line through the readings.
 ///
-/// The weather of the same days, the time zone and the efficiency of today's heater come from the brief. The coefficient is for
-/// comparison with a survey, never for sizing alone.
+/// Today's home is run hour by hour over the days of the readings, with the weather, set points, storage, gains, sun and boiler of the
+/// brief, and its heat loss moved until every interval is met. Its limits hold the scatter of the readings and what may be wrong with
+/// efficiency, set point, gains and sun (settable under [home.bills]). The slope of a straight line is shown beside it as an effective
+/// coefficient: it holds how the sun goes with the cold. Both are for comparison with a survey, never for sizing alone.
 #[derive(Debug, clap::Args)]
 #[command(after_help = "\
-Readings (CSV): columns \"date\" and \"register (m³)\", or \"from\", \"to\" and \"consumption (kWh)\"; beside them \"meter\",
-\"calorific value (MJ/m³)\" and \"estimated\" (yes or no). Dates as 2023-01-31.
+Readings (CSV): columns \"date\" and \"register (m³)\", or \"from\", \"to\" and \"consumption (kWh)\", or \"month\" and
+\"consumption (kWh)\"; beside them \"meter\", \"calorific value (MJ/m³)\" and \"estimated\" (yes or no). Dates as 2023-01-31; as
+31.01.2023 or 31/01/2023 where the order can be told, else say it in the heading: \"date (DD/MM/YYYY)\". Months as 2023-01 or
+Jan 2023. Numbers with a decimal comma in a file of semicolons. Periods that end the day before the next begins are taken to
+hold their last day.
 
 Examples:
   winterledger bills briefs/meter-readings.csv briefs/terrace.toml

@@ -126,6 +126,7 @@ impl HeatPump {
     }
 
     /// Adds an hour up from its steady machine.
+    #[inline]
     fn account(
         &self,
         duty: &Duty,

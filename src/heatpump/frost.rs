@@ -77,6 +77,7 @@ pub fn frost_free_above_c(largest_approach_k: f64) -> f64 {
 
 impl Frost {
     /// Loss at an outdoor temperature, an evaporating temperature and a humidity ratio of the outdoor air (kg/kg).
+    #[inline]
     pub fn loss(&self, outdoor_c: f64, evaporating_c: f64, humidity_ratio: f64) -> FrostLoss {
         let surface_c = surface_c(outdoor_c, evaporating_c);
         if surface_c >= 0.0 {
@@ -94,6 +95,7 @@ impl Frost {
         )
     }
 
+    #[inline]
     fn growth(&self, outdoor_c: f64, surface_c: f64, humidity_ratio: f64) -> FrostSteps {
         let ramp = (surface_c / FULL_GROWTH_C).clamp(0.0, 1.0);
         let frosted_share = ramp * ramp * (3.0 - 2.0 * ramp);

@@ -153,7 +153,8 @@ impl Emitters {
     }
 
     /// Other emitters of the same kind for the same load, with another design flow temperature (°C) and the same spread as
-    /// far as the room (°C) allows; other groups and the greatest flow keep their distance.
+    /// far as the room (°C) allows; other groups and the greatest flow keep their distance, and a flow that is set, fixed or by a
+    /// line, keeps its share of the excess above the room.
     pub fn with_design_flow(&self, flow_c: f64, room_c: f64) -> Self {
         /// Return water stays at least this much above the room, K.
         const LEAST_EXCESS_K: f64 = 1.0;
@@ -178,7 +179,10 @@ impl Emitters {
             room_c,
             greatest_flow_c,
         )
-        .with_control(self.control)
+        .with_control(
+            self.control
+                .scaled(self.design_flow_c(), groups[0].flow_c, room_c),
+        )
         .with_header(self.header_k)
     }
 
@@ -191,6 +195,7 @@ impl Emitters {
     ///
     /// EN 442: output ∝ excess temperature ^ n with the arithmetic mean water temperature; the water flow stays as
     /// designed, so flow minus return is proportional to the heat. One power a group.
+    #[inline]
     pub fn at_load(&self, heat_kw: f64, room_c: f64) -> WaterTemperatures {
         let share = heat_kw / self.design_load_kw;
         let leading = self.groups[0].at_share(share, self.room_c, room_c);
@@ -230,6 +235,7 @@ impl Emitters {
     ///
     /// A flow hotter than needed is throttled by the room valves: the same mean water, a cooler return. A cooler flow carries
     /// less heat.
+    #[inline]
     pub fn supply(&self, heat_kw: f64, room_c: f64, outdoor_c: f64) -> Supply {
         match self.control.flow_c(outdoor_c) {
             None => {

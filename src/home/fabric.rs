@@ -153,6 +153,7 @@ impl Fabric {
     ///
     /// One capacity: `C dT/dt = Q + G − H (T − To)`, solved exactly for constant right-hand side:
     /// `T(t) = T∞ + (T0 − T∞) e^(−t/τ)` with `T∞ = To + (Q + G)/H`.
+    #[inline]
     pub fn heat_to_reach_kwh(
         &self,
         room_c: f64,
@@ -180,6 +181,7 @@ impl Fabric {
     /// [`RECOVERY_H`], and lets a warmer one fall at once.
     ///
     /// At the set point it is the steady loss less gains, whatever the time.
+    #[inline]
     pub fn heat_wanted_kw(&self, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
         let left = self.left_at_target(room_c, target_c);
         self.heat_kw(left, room_c, target_c, outdoor_c, gains_kw)
@@ -194,6 +196,7 @@ impl Fabric {
         }
     }
 
+    #[inline]
     fn heat_kw(&self, left: f64, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
         let settles_c = self.heads_for_c(left, room_c, target_c);
         greater(
@@ -207,11 +210,25 @@ impl Fabric {
         (target_c - room_c * left) / (1.0 - left)
     }
 
-    /// Temperature that the heat wanted heads for, °C, and in how many hours it passes the target.
-    pub fn recovery_heads_for_c(&self, room_c: f64, target_c: f64) -> (f64, f64) {
-        let left = self.left_at_target(room_c, target_c);
-        let hours = if room_c > target_c { 1.0 } else { RECOVERY_H };
-        (self.heads_for_c(left, room_c, target_c), hours)
+    /// Temperature that the heat wanted heads for, °C, and in how many hours it passes the target: one where the warmth is wanted at
+    /// the time.
+    pub fn recovery_heads_for_c(
+        &self,
+        room_c: f64,
+        target_c: f64,
+        at_the_time: bool,
+    ) -> (f64, f64) {
+        if at_the_time || room_c > target_c {
+            (
+                self.heads_for_c(self.left_after_hour, room_c, target_c),
+                1.0,
+            )
+        } else {
+            (
+                self.heads_for_c(self.left_after_recovery, room_c, target_c),
+                RECOVERY_H,
+            )
+        }
     }
 
     /// Whether it stores any heat: without storage nothing is gained by heating ahead.
@@ -230,6 +247,7 @@ impl Fabric {
     }
 
     /// Steps the room through one hour with a constant heat (kWh in the hour).
+    #[inline]
     pub fn step(
         &self,
         room_c: f64,

@@ -88,6 +88,7 @@ impl Group {
     }
 
     /// Water temperatures at a share of its design output, into rooms at `now_c`, designed for rooms at `room_c`.
+    #[inline]
     pub(super) fn at_share(&self, share: f64, room_c: f64, now_c: f64) -> WaterTemperatures {
         let mean_c = now_c + self.excess_k(room_c) * self.kind.excess_share(share);
         let half_spread_k = self.spread_k() * share / 2.0;

@@ -176,6 +176,7 @@ impl Store {
     ///
     /// Never more is drawn than it holds above the cold water. A draw comes out too cool when the store is cooler than the
     /// drawn temperature and its usable share is gone.
+    #[inline]
     pub fn step(&self, state: &StoreState, tapped: &Tapped, clock: &CivilHour) -> StoreStep {
         let lost_kwh = self.loss_kw_per_k * (state.mean_c - self.surroundings_c);
         let held_kwh = self.capacity_kwh_per_k * (state.mean_c - tapped.cold_c) - lost_kwh;
@@ -224,6 +225,7 @@ impl Store {
     }
 
     /// The state after an hour in which a block brought a heat (kWh).
+    #[inline]
     pub fn after(&self, step: &StoreStep, heat_kwh: f64) -> StoreState {
         /// Less than this share of a block that is missing is rounding.
         const ROUNDING: f64 = 1e-9;

@@ -115,12 +115,33 @@ pub fn fit(
 ) -> Result<Signature, FitProblem> {
     let metered = metered(intervals, weather)?;
     let fitted = metered.len() >= LEAST_FOR_BASE;
+    fitted_or_published(intervals, &metered, fitted, stated)
+}
+
+/// The same with the base temperature of published homes, for readings whose line bends nowhere.
+///
+/// # Errors
+/// [`FitProblem`].
+pub fn fit_at_published_base(
+    intervals: &[Interval],
+    weather: &DailyWeather,
+    stated: &Stated,
+) -> Result<Signature, FitProblem> {
+    fitted_or_published(intervals, &metered(intervals, weather)?, false, stated)
+}
+
+fn fitted_or_published(
+    intervals: &[Interval],
+    metered: &[Metered<'_>],
+    fitted: bool,
+    stated: &Stated,
+) -> Result<Signature, FitProblem> {
     let solve = |share: f64, base_c: f64| -> Result<Line, FitProblem> {
         let swing = share * stated.hot_water_swing;
         let found = if fitted {
-            best(&metered, swing)?
+            best(metered, swing)?
         } else {
-            line(&metered, base_c, swing).ok_or(FitProblem::NoHeating)?
+            line(metered, base_c, swing).ok_or(FitProblem::NoHeating)?
         };
         if found.slope <= 0.0 {
             Err(FitProblem::NoHeating)
@@ -145,7 +166,7 @@ pub fn fit(
             [one.base_shape(swing), one.degrees(found.base_c), kink]
         })
         .collect();
-    let unscaled = unscaled_covariance(&metered, &design, fitted).ok_or(FitProblem::NoHeating)?;
+    let unscaled = unscaled_covariance(metered, &design, fitted).ok_or(FitProblem::NoHeating)?;
     let covariance = unscaled.map(|row| row.map(|entry| entry * variance));
     let t = quantile(freedom, QUANTILE);
 
@@ -198,7 +219,7 @@ pub fn fit(
         .map(|one| one.weight() * (one.kwh_per_day - mean).powi(2))
         .sum();
     let mean_weight = weights / metered.len() as f64;
-    let points = points(intervals, &metered, &design, &found, &unscaled, freedom);
+    let points = points(intervals, metered, &design, &found, &unscaled, freedom);
     Ok(Signature {
         heat_loss_w_per_k: Limits::around(heat_loss, half_loss),
         base_temperature_c: Limits::around(found.base_c, half(2)),

@@ -66,12 +66,19 @@ const EFFICIENCY: usize = 4;
 const SHARE: usize = 5;
 
 /// Steps for the derivatives: a share of the heat loss, K, and a share of the sun. The model is smooth over them.
-const STEP_LOSS: f64 = 0.02;
-const STEP_WARMER_K: f64 = 0.25;
-const STEP_SUN: f64 = 0.1;
-/// It has converged when the heat loss moves by less than this share and the base load by less than this many kWh a day.
-const TOLERANCE: f64 = 1e-5;
-const MAX_ITERATIONS: usize = 40;
+const STEP_LOSS: f64 = 0.05;
+const STEP_WARMER_K: f64 = 0.5;
+const STEP_SUN: f64 = 0.2;
+/// It has converged when the next step would lower the sum of squares, in variances, by less than this: 3 % of a standard error.
+const DECREMENT: f64 = 1e-3;
+/// A model that jumps (a warm-up that begins an hour sooner) may never come that near: the nearest is taken if its next step would lower
+/// the sum by less than this, half a standard error, and that step is added to the limits.
+const NEAR_ENOUGH: f64 = 0.25;
+/// The variance is found to this share.
+const VARIANCE_TOLERANCE: f64 = 0.01;
+const MAX_ITERATIONS: usize = 60;
+/// After so many iterations steps are halved: a warm-up that begins an hour sooner or later makes the model jump a little.
+const WHOLE_STEPS: usize = 8;
 /// The heat loss moves by no more than this factor in a step.
 const MOST_STEP: f64 = 1.6;
 /// No home is its model to less than this share of its mean use: common practice, no source.
@@ -132,6 +139,7 @@ pub fn fit_own_home(
     let mut at = prior;
     at[LOSS] = start_w_per_k;
     let mut variance = least_variance.max((0.1 * mean).powi(2) * weights / number);
+    let mut nearest: Option<(f64, OwnHome)> = None;
     for iteration in 0..MAX_ITERATIONS {
         let looked = look(&metered, stated, &at, &is_free, heating_kwh);
         let mut data = Matrix::zeros();
@@ -162,31 +170,37 @@ pub fn fit_own_home(
         let used = (covariance * data).trace();
         let freedom = (number - used).max(1.0);
         let new_variance = (squares / freedom).max(least_variance);
-        let settled = step[LOSS].abs() < TOLERANCE * at[LOSS]
-            && step[BASE].abs() < TOLERANCE * mean
-            && (new_variance / variance - 1.0).abs() < 1e-3;
-        if settled && iteration > 0 {
+        let settled = step.dot(&pull) < DECREMENT
+            && (new_variance / variance - 1.0).abs() < VARIANCE_TOLERANCE;
+        let decrement = step.dot(&pull);
+        let is_nearest = nearest.as_ref().is_none_or(|(least, _)| decrement < *least);
+        if iteration > 0 && (settled || is_nearest) {
             let scatter = covariance * data * covariance;
             let t = quantile(freedom, 0.975);
             let limits = |k: usize| {
                 let known = (covariance[(k, k)] - scatter[(k, k)]).max(0.0);
-                let half = (t * t * scatter[(k, k)] + NORMAL_95 * NORMAL_95 * known).sqrt();
+                let left = NORMAL_95 * step[k];
+                let half =
+                    (t * t * scatter[(k, k)] + NORMAL_95 * NORMAL_95 * known + left * left).sqrt();
                 Limits::around(at[k], if is_free(k) { half } else { 0.0 })
             };
-            return Ok(OwnHome {
+            let own = OwnHome {
                 heat_loss_w_per_k: limits(LOSS),
                 base_load_kwh_per_day: limits(BASE),
                 warmer_k: limits(WARMER),
                 sun: limits(SUN),
                 knows_sun: doubt.sun.is_some(),
-                fitted_kwh_per_day: looked.fitted,
+                fitted_kwh_per_day: looked.fitted.clone(),
                 cv_rmse: (squares / freedom * number / weights).sqrt() / mean,
-            });
+            };
+            if settled {
+                return Ok(own);
+            }
+            nearest = Some((decrement, own));
         }
         let loss = at[LOSS];
-        at += step;
+        at += step * if iteration < WHOLE_STEPS { 1.0 } else { 0.5 };
         at[LOSS] = at[LOSS].clamp(loss / MOST_STEP, loss * MOST_STEP);
-        at[SUN] = at[SUN].max(0.0);
         at[EFFICIENCY] = at[EFFICIENCY].max(0.1);
         if at[LOSS] < 1.0 {
             return Err(FitProblem::NoHeating);
@@ -194,7 +208,10 @@ pub fn fit_own_home(
         // The scatter is found together with the home; half a step keeps the two from chasing each other.
         variance = (variance * new_variance).sqrt();
     }
-    Err(FitProblem::NotConverged)
+    match nearest {
+        Some((decrement, own)) if decrement < NEAR_ENOUGH => Ok(own),
+        _ => Err(FitProblem::NotConverged),
+    }
 }
 
 fn look(

@@ -2,10 +2,13 @@
 
 use chrono::NaiveDate;
 
-use super::rows::{HEADING, Row, columns, row, unreadable};
+use super::dates::order;
+use super::pieces::{ends_are_last_days, from_consumption, from_register, join_estimated};
+use super::rows::{EXAMPLE, HEADING, Written, columns, row, unreadable};
 use crate::limits::check_lines;
 use crate::problem::{Finding, Place, Problem, Problems, Severity};
-use crate::units::{CalorificBasis, CalorificValue, Fuel, FuelUnit};
+use crate::units::{CalorificValue, Fuel};
+use crate::weather::DateForm;
 
 /// How metered amounts become gross kilowatt-hours.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -40,9 +43,6 @@ pub struct Readings {
     pub findings: Vec<Finding>,
 }
 
-/// Most that a home uses in a day, kWh: above it a unit or a digit has slipped. Common practice, no source.
-const MOST_KWH_PER_DAY: f64 = 3000.0;
-
 impl Readings {
     /// Reads a CSV with a line of headings. Lines that begin with # are passed over.
     ///
@@ -70,7 +70,7 @@ impl Readings {
             Problem::new(place, beyond.found, beyond.allowed, "")
         })?;
         if first.trim().is_empty() {
-            return Err(Problem::new(place, "no line of headings", HEADING, "").into());
+            return Err(Problem::new(place, "no line of headings", HEADING, EXAMPLE).into());
         }
         let columns = match reader.headers() {
             Ok(headings) => problems.take(columns(headings, &place)),
@@ -82,17 +82,55 @@ impl Readings {
         let Some(columns) = columns else {
             return problems.or(()).and(Err(Problems::new()));
         };
-        let mut rows = Vec::new();
+        let mut records = Vec::new();
         for record in reader.records() {
             match record {
-                Ok(record) => rows.extend(problems.take(row(&record, &columns, &place))),
+                Ok(record) => records.push(record),
                 Err(error) => problems.push(unreadable(&error, &place)),
             }
+        }
+        let dates: Vec<&str> = records
+            .iter()
+            .flat_map(|record| {
+                let from = columns.from.and_then(|column| record.get(column));
+                from.into_iter().chain(record.get(columns.date))
+            })
+            .collect();
+        let order = if columns.by_month {
+            Ok(DateForm::YearFirst)
+        } else {
+            order(columns.order.as_deref(), &dates, &place)
+        };
+        let written = Written {
+            order: order?,
+            decimal_comma: semicolons
+                && records.iter().any(|record| {
+                    record
+                        .get(columns.amount)
+                        .is_some_and(|text| text.contains(','))
+                }),
+        };
+        let mut rows = Vec::with_capacity(records.len());
+        for record in &records {
+            rows.extend(problems.take(row(record, &columns, written, &place)));
         }
         let mut findings = Vec::new();
         let pieces = if columns.is_register {
             from_register(&rows, &place, &mut problems)
         } else {
+            if ends_are_last_days(&rows) {
+                findings.push(
+                    Finding::new(
+                        Severity::Note,
+                        "each period begins the day after the one before ends",
+                        "the ends were taken as last days of their periods, as bills print them",
+                    )
+                    .at(&place),
+                );
+                for row in &mut rows {
+                    row.date = row.date.succ_opt().unwrap_or(row.date);
+                }
+            }
             from_consumption(&rows, &place, &mut problems)
         };
         let pieces = join_estimated(pieces, &place, &mut findings);
@@ -108,201 +146,39 @@ impl Readings {
                 "",
             ));
         }
-        problems.or(Self {
+        collapsed(problems).or(Self {
             intervals,
             findings,
         })
     }
 }
 
-/// An interval in the file's own unit.
-struct Piece {
-    from: NaiveDate,
-    to: NaiveDate,
-    amount: f64,
-    line: usize,
-    calorific_value: Option<CalorificValue>,
-    /// Whether the reading at its end was estimated.
-    estimated: bool,
-}
+/// So many lines may each have their own message of the same kind.
+const MOST_ALIKE: usize = 3;
 
-impl Piece {
-    fn interval(
-        &self,
-        unit: FuelUnit,
-        conversion: &Conversion,
-        place: &Place,
-    ) -> Result<Interval, Problems> {
-        let place = place.clone().at_line(self.line);
-        let value = self.calorific_value.or(conversion.calorific_value);
-        let each = unit.gross_kwh(
-            conversion.fuel,
-            CalorificBasis::Gross,
-            value,
-            conversion.volume_correction,
-        );
-        let Some(each) = each else {
-            return Err(Problem::new(
-                place,
-                format!("{} of {} without a calorific value", unit.symbol, conversion.fuel),
-                "energy, or a volume whose calorific value is known",
-                "add a column \"calorific value (MJ/m³)\", or write calorific_value = \"39.3 MJ/m³\" under [home.bills]",
-            )
-            .into());
-        };
-        let kwh = self.amount * each;
-        let days = (self.to - self.from).num_days() as f64;
-        if kwh / days > MOST_KWH_PER_DAY {
-            return Err(Problem::new(
-                place,
-                format!(
-                    "{:.0} kWh a day from {} to {}",
-                    kwh / days,
-                    self.from,
-                    self.to
+/// The same thing wrong with many lines is said once.
+fn collapsed(problems: Problems) -> Problems {
+    let all: Vec<_> = problems.iter().cloned().collect();
+    let alike = |a: &Problem, b: &Problem| {
+        a.place.field == b.place.field && a.allowed == b.allowed && a.remedy == b.remedy
+    };
+    let mut shown = Problems::new();
+    for (i, problem) in all.iter().enumerate() {
+        let number = all.iter().filter(|other| alike(problem, other)).count();
+        if number <= MOST_ALIKE {
+            shown.push(problem.clone());
+        } else if !all[..i].iter().any(|other| alike(problem, other)) {
+            let line = problem.place.line.unwrap_or(0);
+            shown.push(Problem {
+                found: format!(
+                    "{} (the first of {number} lines, line {line})",
+                    problem.found
                 ),
-                format!("at most {MOST_KWH_PER_DAY} kWh a day"),
-                "check the unit and the digits of the register",
-            )
-            .into());
-        }
-        Ok(Interval {
-            from: self.from,
-            to: self.to,
-            kwh,
-            line: self.line,
-        })
-    }
-}
-
-fn from_register(rows: &[Row], place: &Place, problems: &mut Problems) -> Vec<Piece> {
-    let mut pieces = Vec::new();
-    for pair in rows.windows(2) {
-        let (before, after) = (&pair[0], &pair[1]);
-        let here = place.clone().at_line(after.line);
-        let changed = before.meter != after.meter;
-        if after.date < before.date || (after.date == before.date && !changed) {
-            problems.push(Problem::new(
-                here.in_field("date"),
-                format!(
-                    "{} after {} in line {}",
-                    after.date, before.date, before.line
-                ),
-                "dates that rise from line to line",
-                "sort the file and remove readings that stand there twice",
-            ));
-        } else if changed {
-            // The old meter's last reading and the new one's first are no interval.
-        } else if after.amount < before.amount {
-            problems.push(Problem::new(
-                here.in_field("register"),
-                format!("{} after {} in line {}: the register runs backwards", after.amount, before.amount, before.line),
-                "a register that rises",
-                "if the meter was changed, give every line the name of its meter in a column \"meter\", with the last reading \
-                 of the old and the first of the new; if the register began again at 0, add its full range",
-            ));
-        } else {
-            pieces.push(Piece {
-                from: before.date,
-                to: after.date,
-                amount: after.amount - before.amount,
-                line: after.line,
-                calorific_value: after.calorific_value,
-                estimated: after.estimated,
+                ..problem.clone()
             });
         }
     }
-    pieces
-}
-
-fn from_consumption(rows: &[Row], place: &Place, problems: &mut Problems) -> Vec<Piece> {
-    let mut pieces: Vec<Piece> = Vec::new();
-    for row in rows {
-        let here = place.clone().at_line(row.line);
-        let from = row.from.unwrap_or(row.date);
-        if from >= row.date {
-            problems.push(Problem::new(
-                here.in_field("to"),
-                format!("{} to {from}", row.date),
-                "a period that ends after it begins",
-                "check both dates",
-            ));
-            continue;
-        }
-        if let Some(last) = pieces.last()
-            && from < last.to
-        {
-            problems.push(Problem::new(
-                here.in_field("from"),
-                format!(
-                    "{from}, but the period of line {} ends {}: they overlap",
-                    last.line, last.to
-                ),
-                "periods that follow one another",
-                "sort the file and let each period begin where the one before ends",
-            ));
-            continue;
-        }
-        pieces.push(Piece {
-            from,
-            to: row.date,
-            amount: row.amount,
-            line: row.line,
-            calorific_value: row.calorific_value,
-            estimated: row.estimated,
-        });
-    }
-    pieces
-}
-
-/// Joins what ends with an estimate to what follows it; an estimate at the end is left out.
-fn join_estimated(pieces: Vec<Piece>, place: &Place, findings: &mut Vec<Finding>) -> Vec<Piece> {
-    let mut joined: Vec<Piece> = Vec::new();
-    let mut open: Option<Piece> = None;
-    for piece in pieces {
-        let piece = match open.take() {
-            Some(before) if before.to == piece.from => Piece {
-                from: before.from,
-                amount: before.amount + piece.amount,
-                ..piece
-            },
-            Some(before) => {
-                findings.push(left_out(&before, place));
-                piece
-            }
-            None => piece,
-        };
-        if piece.estimated {
-            findings.push(
-                Finding::new(
-                    Severity::Note,
-                    format!("the reading of {} is an estimate", piece.to),
-                    "it was joined to the next one that was read",
-                )
-                .at(&place.clone().at_line(piece.line)),
-            );
-            open = Some(piece);
-        } else {
-            joined.push(piece);
-        }
-    }
-    if let Some(last) = open {
-        findings.pop();
-        findings.push(left_out(&last, place));
-    }
-    joined
-}
-
-fn left_out(piece: &Piece, place: &Place) -> Finding {
-    Finding::new(
-        Severity::Warning,
-        format!(
-            "the readings from {} to {} end with an estimate",
-            piece.from, piece.to
-        ),
-        "they were left out, since no later reading corrects them",
-    )
-    .at(&place.clone().at_line(piece.line))
+    shown
 }
 
 #[cfg(test)]
@@ -366,6 +242,32 @@ mod tests {
         let text =
             "from;to;consumption (kWh)\n2023-01-01;2023-02-01;900\n2023-03-01;2023-04-01;500\n";
         assert_eq!(read(text).unwrap().intervals.len(), 2);
+    }
+
+    #[test]
+    fn paper_bills_are_read_as_they_are_printed() {
+        let text =
+            "from;to;consumption (kWh)\n01.01.2023;31.01.2023;900,5\n01.02.2023;28.02.2023;800\n";
+        let found = read(text).unwrap();
+        assert_eq!(found.intervals[0].kwh, 900.5);
+        let to = found.intervals.iter().map(|one| one.to.to_string());
+        assert_eq!(to.collect::<Vec<_>>(), ["2023-02-01", "2023-03-01"]);
+        assert!(found.findings[0].what.contains("day after"));
+        let table = read("Month,kWh\n2023-01,900\nFeb 2023,800\n").unwrap();
+        assert_eq!(table.intervals[1].to.to_string(), "2023-03-01");
+        assert!(table.findings.is_empty());
+    }
+
+    #[test]
+    fn what_is_wrong_with_many_lines_is_said_once() {
+        let lines: String = (1..=12).map(|i| format!("Month {i},900\n")).collect();
+        let problems = read(&format!("Month,kWh\n{lines}")).unwrap_err();
+        assert_eq!(problems.len(), 1);
+        let told = problems.to_string();
+        assert!(
+            told.contains("first of 12 lines, line 2") && told.contains("2023-01,1905"),
+            "{told}"
+        );
     }
 
     proptest::proptest! {

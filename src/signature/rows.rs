@@ -2,8 +2,10 @@
 
 use chrono::NaiveDate;
 
+use super::dates::{example, month};
 use crate::problem::{Place, Problem, Problems};
 use crate::units::{CalorificValue, FuelUnit};
+use crate::weather::{DateForm, date};
 
 /// A line of the file.
 pub(super) struct Row {
@@ -26,10 +28,26 @@ pub(super) struct Columns {
     pub meter: Option<usize>,
     pub calorific_value: Option<(usize, String)>,
     pub estimated: Option<usize>,
+    /// Whether a month stands in place of dates.
+    pub by_month: bool,
+    /// What the heading says about the order of its dates.
+    pub order: Option<String>,
 }
 
-pub(super) const HEADING: &str = "columns \"date\" and \"register (m³)\", or \"from\", \"to\" and \"consumption (kWh)\"; beside them \
+/// How the file writes dates and numbers.
+#[derive(Clone, Copy)]
+pub(super) struct Written {
+    pub order: DateForm,
+    pub decimal_comma: bool,
+}
+
+pub(super) const HEADING: &str = "columns \"date\" and \"register (m³)\", \"from\", \"to\" and \"consumption (kWh)\", or \"month\" and \"consumption (kWh)\"; beside them \
                        \"meter\", \"calorific value (MJ/m³)\" and \"estimated\"";
+
+/// A whole file, for messages.
+pub(super) const EXAMPLE: &str = "write for example\n             from,to,consumption (kWh)\n             2023-01-01,2023-02-01,1905\n             \
+                       2023-02-01,2023-03-01,1712\n           or\n             month,consumption (kWh)\n             2023-01,1905\n             \
+                       2023-02,1712";
 
 /// A line that the CSV reader cannot take apart.
 pub(super) fn unreadable(error: &csv::Error, place: &Place) -> Problem {
@@ -65,13 +83,20 @@ fn heading(text: &str) -> (String, Option<String>) {
 }
 
 pub(super) fn columns(headings: &csv::StringRecord, place: &Place) -> Result<Columns, Problems> {
-    let names: Vec<_> = headings.iter().map(heading).collect();
+    let mut names: Vec<_> = headings.iter().map(heading).collect();
+    // "Month,kWh": a unit alone is an amount that was used.
+    for (name, text) in names.iter_mut().zip(headings) {
+        if let Some(unit) = FuelUnit::from_symbol(text.trim()) {
+            *name = ("consumption".to_owned(), Some(unit.symbol.to_owned()));
+        }
+    }
     let find = |wanted: &str| names.iter().position(|(name, _)| name == wanted);
     let refuse = |found: String, remedy: &str| -> Problems {
         Problem::new(place.clone(), found, HEADING, remedy).into()
     };
     let known = [
         "date",
+        "month",
         "register",
         "from",
         "to",
@@ -90,20 +115,24 @@ pub(super) fn columns(headings: &csv::StringRecord, place: &Place) -> Result<Col
             "rename or remove it; remarks go into a column \"note\"",
         ));
     }
+    let by_month = find("month").is_some() && find("from").is_none();
     let (date, from, amount, is_register) = match (
-        find("date"),
+        find("date").or(find("month")),
         find("register"),
         find("from"),
         find("to"),
         find("consumption"),
     ) {
-        (Some(date), Some(register), None, None, None) => (date, None, register, true),
+        (Some(date), Some(register), None, None, None) if !by_month => (date, None, register, true),
+        (Some(date), None, None, None, Some(consumption)) if by_month => {
+            (date, None, consumption, false)
+        }
         (None, None, Some(from), Some(to), Some(consumption)) => {
             (to, Some(from), consumption, false)
         }
         _ => {
             let found: Vec<_> = names.iter().map(|(name, _)| name.as_str()).collect();
-            return Err(refuse(format!("columns {}", found.join(", ")), ""));
+            return Err(refuse(format!("columns {}", found.join(", ")), EXAMPLE));
         }
     };
     let unit = names[amount].1.as_deref();
@@ -129,7 +158,10 @@ pub(super) fn columns(headings: &csv::StringRecord, place: &Place) -> Result<Col
                 .unwrap_or_else(|| "MJ/m³".to_owned()),
         )
     });
+    let order = names[date].1.clone();
     Ok(Columns {
+        by_month,
+        order,
         date,
         from,
         amount,
@@ -141,9 +173,21 @@ pub(super) fn columns(headings: &csv::StringRecord, place: &Place) -> Result<Col
     })
 }
 
+/// A number as the file writes it.
+fn number(text: &str, decimal_comma: bool) -> Option<f64> {
+    if decimal_comma {
+        if text.contains('.') {
+            return None;
+        }
+        return text.replace(',', ".").parse().ok();
+    }
+    text.parse().ok()
+}
+
 pub(super) fn row(
     record: &csv::StringRecord,
     columns: &Columns,
+    written: Written,
     place: &Place,
 ) -> Result<Row, Problems> {
     let line = record
@@ -160,26 +204,36 @@ pub(super) fn row(
             remedy,
         ));
     };
-    let mut date = |column: usize, name: &str| {
-        let date = field(column).parse::<NaiveDate>().ok();
-        if date.is_none() {
+    let mut dated = |column: usize, name: &str| {
+        let found = date(field(column), written.order);
+        if found.is_none() {
+            let (order, day) = example(written.order);
             refuse(
                 name,
                 field(column),
-                "a date as year-month-day",
-                "write for example 2023-01-31",
+                &format!("a date as {order}"),
+                &format!("write for example {day}"),
             );
         }
-        date
+        found
     };
-    let to = date(
-        columns.date,
-        if columns.is_register { "date" } else { "to" },
-    );
-    let from = columns.from.map(|column| date(column, "from"));
-    let amount = field(columns.amount)
-        .parse::<f64>()
-        .ok()
+    let (from, to) = if columns.by_month {
+        let found = month(field(columns.date));
+        if found.is_none() {
+            refuse(
+                "month",
+                field(columns.date),
+                "a month with its year, as year-month",
+                EXAMPLE,
+            );
+        }
+        (Some(found.map(|found| found.0)), found.map(|found| found.1))
+    } else {
+        let name = if columns.is_register { "date" } else { "to" };
+        let to = dated(columns.date, name);
+        (columns.from.map(|column| dated(column, "from")), to)
+    };
+    let amount = number(field(columns.amount), written.decimal_comma)
         .filter(|amount| amount.is_finite() && *amount >= 0.0);
     if amount.is_none() {
         let name = if columns.is_register {
@@ -191,12 +245,20 @@ pub(super) fn row(
             name,
             field(columns.amount),
             "a number from 0 up",
-            "write it with a decimal point and without separators",
+            if written.decimal_comma {
+                "write it with a decimal comma and without separators"
+            } else {
+                "write it with a decimal point and without separators"
+            },
         );
     }
     let calorific_value = match &columns.calorific_value {
         Some((column, unit)) if !field(*column).is_empty() => {
-            let text = format!("{} {unit}", field(*column));
+            let value = number(field(*column), written.decimal_comma);
+            let text = match value {
+                Some(value) => format!("{value} {unit}"),
+                None => format!("{} {unit}", field(*column)),
+            };
             match CalorificValue::parse(&text) {
                 Ok(value) => Some(value),
                 Err(problem) => {

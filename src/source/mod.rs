@@ -70,6 +70,7 @@ pub struct GroundLoop {
 
 impl Source {
     /// The offer of an hour with an outdoor temperature (°C), after what the ground remembers.
+    #[inline]
     pub fn offer(&self, hour: usize, outdoor_c: f64, memory: &Memory) -> Offer {
         match self {
             Self::OutdoorAir => Offer {

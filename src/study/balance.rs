@@ -160,6 +160,7 @@ pub fn balance_point(
         .configure(|state| state.param(low_c).max_iters(MAX_ITERATIONS))
         .run()
         .ok()?;
-    let at_c = *solved.state().get_best_param()?;
-    Some(BalancePoint::At(at_c))
+    let state = solved.state();
+    let &at_c = state.get_best_param()?;
+    (state.get_iter() < MAX_ITERATIONS).then_some(BalancePoint::At(at_c))
 }

@@ -155,7 +155,7 @@ pub(super) fn decide(
         let told = options
             .date_order
             .map(|order| order.form())
-            .or_else(|| headed(&columns.date_format));
+            .or_else(|| order_in_heading(&columns.date_format));
         let (form, order_guessed) = match told {
             Some(form) => (form, false),
             None => {
@@ -193,8 +193,8 @@ pub(super) fn is_time(row: &impl Fields, columns: TimeColumns) -> bool {
         .any(|&form| TimeForm { columns, form }.stamp(row).is_some())
 }
 
-/// The order that a heading such as `Date (MM/DD/YYYY)` states.
-fn headed(format: &str) -> Option<DateForm> {
+/// The order that a heading such as `Date (MM/DD/YYYY)` states, given in lower case.
+pub fn order_in_heading(format: &str) -> Option<DateForm> {
     let day = format.find('d')?;
     let month = format.find('m')?;
     let year = format.find('y')?;

@@ -45,6 +45,7 @@ use std::ops::Range;
 use chrono::{DateTime, Datelike, Duration, Months, NaiveDate, Utc};
 
 pub use adjust::{Adjusted, Adjustment, STANDARD_LAPSE_K_PER_KM};
+pub use date_form::order_in_heading;
 pub use degree_days::{Rule, degree_days};
 pub use describe::{
     DegreeDays, Description, SPELL_DAYS, Spell, YearFigures, coldest_days, describe,
@@ -55,6 +56,7 @@ pub use options::{
     ReadOptions, RepairPolicy, StampMarks, TemperatureUnit,
 };
 pub use read::{read, read_all, read_all_bytes, read_bytes};
+pub use time_stamp::{DateForm, date};
 pub use typical_year::{TypicalYear, typical_year};
 pub use write::to_csv;
 pub use zone::Zone;

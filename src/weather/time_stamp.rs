@@ -88,6 +88,15 @@ pub(super) fn stamp(text: &[u8], form: DateForm) -> Option<Stamp> {
     }
 }
 
+/// Reads a date without a time of day.
+pub fn date(text: &str, form: DateForm) -> Option<NaiveDate> {
+    let (day_s, rest) = date_prefix(text.trim().as_bytes(), form)?;
+    let days = i32::try_from(day_s / DAY_S + EPOCH_DAY).ok()?;
+    rest.is_empty()
+        .then(|| NaiveDate::from_num_days_from_ce_opt(days))
+        .flatten()
+}
+
 /// Reads a date and a time of day from two fields.
 pub(super) fn stamp_of_two(date: &[u8], time: &[u8], form: DateForm) -> Option<Stamp> {
     let (day_s, rest) = date_prefix(date.trim_ascii(), form)?;

@@ -26,14 +26,17 @@ pub(super) fn boiler_hour(
     }
     row.heater_space_kwh = lesser(rooms.wanted_kw, boiler.output_kw - row.heater_water_kwh);
     if row.heater_space_kwh > 0.0 {
-        let supply = home
-            .emitters
-            .supply(row.heater_space_kwh, rooms.room_c, rooms.outdoor_c);
+        let emitters = &home.emitters;
+        let supply = match fixed_flow_c {
+            None => emitters.supply(row.heater_space_kwh, rooms.room_c, rooms.outdoor_c),
+            Some(flow_c) => emitters.supply_at(row.heater_space_kwh, rooms.room_c, flow_c),
+        };
         row.flags |=
             Flags::FLOW_TOO_COOL.when(supply.heat_kw < row.heater_space_kwh * (1.0 - ROUNDING));
         row.heater_space_kwh = supply.heat_kw;
         let follows = supply.water;
-        // Fixed: it fires at its set flow with the emitters' design spread and lets the valves throttle.
+        // Fixed: it fires now and then at its set flow, with its full water flow and so the emitters' design spread; the cool return
+        // that throttling valves would give a machine that runs on is not credited to it.
         let warm = fixed_flow_c.map_or(follows, |flow_c| WaterTemperatures {
             flow_c,
             return_c: flow_c - home.emitters.design_spread_k(),

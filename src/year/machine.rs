@@ -17,6 +17,7 @@ pub(super) const ROUNDING: f64 = 1e-9;
 const LEAST_RUN_H: f64 = 1e-6;
 
 /// Tells the source what was drawn, and charges its pump.
+#[inline]
 pub(super) fn ground_hour(hour: usize, system: &MachineSystem, state: &mut State, row: &mut Row) {
     let source = &system.source;
     source.drawn(hour, row.extracted_kwh, &mut state.ground);
@@ -102,6 +103,7 @@ pub(super) fn heat_pump_hour<P: Probe>(
 
 /// Flow minus return while the machine runs: the design water flow carries the heat of the running time, held to what pump and
 /// machine allow.
+#[inline]
 fn delivered_spread_k(duty: &Duty, delivered: &Delivered) -> f64 {
     let asked_kwh = duty.heat_kw * duty.hours;
     if asked_kwh > 0.0 && delivered.running_hours > 0.0 {
@@ -160,6 +162,7 @@ fn hot_water_block<P: Probe>(
 }
 
 /// Puts a duty's electricity into its components; gives their sum.
+#[inline]
 fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
     row.compressor_kwh += delivered.compressor_kwh;
     row.source_side_kwh += delivered.source_side_kwh;

@@ -21,6 +21,7 @@ pub(super) struct Rooms {
 
 impl Rooms {
     /// What they want by their set point and the warm-up for the next, at the outdoor temperature and set point of the row.
+    #[inline]
     pub fn ask(
         hour: usize,
         home: &Home,

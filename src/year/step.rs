@@ -183,6 +183,7 @@ fn fill<P: Probe>(
 }
 
 /// Cost and carbon of an hour's energy at the plan's signals.
+#[inline]
 pub(super) fn charge_energy(plan: &Plan, hour: usize, row: &mut Row) {
     let electricity_kwh = row.electricity_kwh();
     let fuel = plan.fuel.as_ref();

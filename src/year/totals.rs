@@ -59,6 +59,7 @@ impl<'a> Totals<'a> {
 }
 
 impl Sink for Totals<'_> {
+    #[inline]
     fn take(&mut self, hour: usize, row: &Row) {
         self.months[usize::from(self.month0[hour])].add(row);
         self.hours += 1;

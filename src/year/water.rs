@@ -8,6 +8,7 @@ use crate::fault::{self, Fault};
 use crate::home::{Home, StoreStep, Tapped};
 
 /// Draws an hour's hot water and says what its heater must bring.
+#[inline]
 pub(super) fn draw(
     home: &Home,
     site: &Site,
@@ -55,6 +56,7 @@ pub(super) fn draw(
 }
 
 /// Puts the hour's heat into the store.
+#[inline]
 pub(super) fn store_hour(home: &Home, water: &StoreStep, state: &mut State, row: &mut Row) {
     let store = home
         .hot_water

@@ -306,6 +306,7 @@ fn meter() -> SignaturePlot {
         base_temperature_c: 15.9,
         heat_loss_w_per_k: 197.0,
         heat_loss_95: (181.0, 213.0),
+        is_effective: false,
     }
 }
 

@@ -235,7 +235,8 @@ fn ground_source_in_existing_buildings_inland() {
 ///
 /// Bores, machine, hot water stay. The air source is run in the same home: a change of place must keep it in its own band too.
 ///
-/// Run as committed before: air 2.90, met; ground 3.47, missed once more, by 9 %. Warmer ground and a younger loop give 6.6 % there,
+/// Run as committed before: air 2.90, met; ground 3.47, missed once more, by 9 % (2.89 and 3.46 since the hours balance machine and
+/// emitters more closely). Warmer ground and a younger loop give 6.6 % there,
 /// the hotter flow takes 5.8 % (`waterfall.rs`). So neither place nor age of the loop is what is missing.
 const IN_THE_TRIALS_PLACE: &str = "
 [home]
@@ -316,7 +317,7 @@ fn ground_source_in_a_mild_maritime_trial() {
 /// How far air against ground is off. Each trial watched both; the allowance from bench to home is common to both here and cancels.
 ///
 /// Ground over air in the trials: RHPP 2.71/2.44 = 1.11 at H4 \[from memory\], ISE 2020 4.1/3.1 = 1.32 and ISE 2025 4.3/3.4 = 1.26 at
-/// about H3. The homes put together like theirs: 1.16 and 1.19. Ours lie between the trials, 4 % above the one and 10 %
+/// about H3. The homes put together like theirs: 1.16 and 1.20. Ours lie between the trials, 4 % above the one and 10 %
 /// below the other: the ground's electricity beside air's is known no better than to +5 and −10 %. What tells the trials apart is not in
 /// them: other homes have the ground sources than the air sources, often newer and with floors.
 #[test]

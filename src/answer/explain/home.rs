@@ -47,7 +47,12 @@ pub(super) fn rooms(contender: &Contender, traced: &Traced) -> Part {
         ),
     );
     let tau = fabric.time_constant_h();
-    let (heads_for, within) = fabric.recovery_heads_for_c(before, row.set_point_c);
+    let at_the_time = contender
+        .plan
+        .recovery
+        .as_ref()
+        .is_some_and(|recovery| recovery.at_the_time);
+    let (heads_for, within) = fabric.recovery_heads_for_c(before, row.set_point_c, at_the_time);
     part.add(
         "temperature to head for",
         heads_for,
@@ -77,16 +82,21 @@ pub(super) fn rooms(contender: &Contender, traced: &Traced) -> Part {
         "gains and stored heat are enough".to_owned()
     };
     part.add("heat wanted", row.space_wanted_kwh, "kWh", how);
+    let by_fabric_kw = fabric.design_load_kw(contender.indoor_c, contender.design_outdoor_c);
     part.add(
         "design heat load",
-        fabric.design_load_kw(contender.indoor_c, contender.design_outdoor_c),
+        contender.design_load_kw,
         "kW",
-        format!(
-            "H × (set point − design outdoor), gains not counted = {} × ({} − {})",
-            n(loss),
-            n(contender.indoor_c),
-            n(contender.design_outdoor_c)
-        ),
+        if (by_fabric_kw / contender.design_load_kw - 1.0).abs() < 1e-9 {
+            format!(
+                "H × (set point − design outdoor), gains not counted = {} × ({} − {})",
+                n(loss),
+                n(contender.indoor_c),
+                n(contender.design_outdoor_c)
+            )
+        } else {
+            "of the home as surveyed: scaling to the meter leaves it".to_owned()
+        },
     );
     part.part("What the rooms ask")
 }

@@ -16,7 +16,7 @@ pub fn signature_picture(signature: &Signature, marks: &Marks) -> Result<Picture
         name: format!("{} to {}", point.from, point.to),
         odd: point.odd,
     });
-    let heat_loss = &signature.heat_loss_w_per_k;
+    let heat_loss = signature.heat_loss();
     let data = SignaturePlot {
         points: points.collect(),
         base_load_kwh_per_day: signature.base_load_kwh_per_day.value,
@@ -24,6 +24,7 @@ pub fn signature_picture(signature: &Signature, marks: &Marks) -> Result<Picture
         base_temperature_c: signature.base_temperature_c.value,
         heat_loss_w_per_k: heat_loss.value,
         heat_loss_95: (heat_loss.low, heat_loss.high),
+        is_effective: !signature.own_home.as_ref().is_some_and(|own| own.knows_sun),
     };
     signature_plot(&data, marks)
 }
@@ -34,7 +35,8 @@ pub(super) fn signature(material: &Material<'_>) -> Result<Option<Drawn>, ChartE
         return Ok(None);
     };
     let picture = signature_picture(signature, &material.locale.marks)?;
-    let caption = "Each point is the time between two readings of the meter. The steeper the line, the more heat the home \
-                   loses; where it bends, heating begins.";
+    let caption = "Each point is the time between two readings of the meter. Where the line bends, heating begins. \
+                   Its slope also holds how the sun goes with the cold; the heat loss is that at which the home's own model, which \
+                   knows the sun where it can, uses what was metered.";
     Ok(Some(drawn("signature", caption, picture)))
 }
