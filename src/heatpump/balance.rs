@@ -9,7 +9,7 @@ const DRAW_TOLERANCE_K: f64 = 1e-5;
 /// Of a kilowatt of heat about this comes from the source (COP 4): where the search for that balance begins, nothing else.
 const USUAL_EXTRACTED_SHARE: f64 = 0.75;
 /// By about this share a machine at the same speed draws more from a source one kelvin warmer, and a machine at the same output takes
-/// less electricity (methods §2): the first step of that search, nothing else.
+/// less electricity (Staffell et al. 2012, doi 10.1039/c2ee22653g): the first step of that search, nothing else.
 const USUAL_GROWTH_PER_K: f64 = 0.027;
 /// Off by less than this, a source's temperature is found on the straight line through the last two machines, K: from 0.1 K away its
 /// curve over 0.01 K more (1e-3 of the draw for each square kelvin) leaves 1e-6 K.

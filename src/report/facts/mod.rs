@@ -55,8 +55,8 @@ pub(super) fn facts(material: &Material<'_>) -> Value {
     if let Some(today) = today.first() {
         put("today", (*today).clone());
     }
-    let warm = choices.iter().filter(|choice| !cold(choice));
-    if let (Some(best), Some(worst)) = (choices.first(), warm.last().or(choices.last())) {
+    let mut warm = choices.iter().filter(|choice| !cold(choice));
+    if let (Some(best), Some(worst)) = (choices.first(), warm.next_back().or(choices.last())) {
         let saving = number(best, "saving");
         put(
             "same",
