@@ -2,28 +2,17 @@
 
 use super::boiler::{account_boiler, boiler_hour};
 use super::machine::heat_pump_hour;
-use super::rooms::Rooms;
+use super::rooms::Asked;
 use super::row::Row;
-use super::site::Plan;
 use super::step::{Probe, Unwatched, charge_energy};
 use super::system::HybridSystem;
 use crate::heater::{Effort, Side};
 use crate::heatpump::ColdSide;
-use crate::home::{Home, StoreStep};
-
-/// What is asked of a hybrid in an hour, and where it stands.
-pub(super) struct Asked<'a> {
-    pub hour: usize,
-    pub plan: &'a Plan,
-    pub home: &'a Home,
-    pub cold: &'a ColdSide,
-    pub water: &'a StoreStep,
-    pub rooms: &'a Rooms,
-}
 
 /// Decides which side serves the hour, rooms and hot water alike, from what either way would take in this very hour.
 pub(super) fn hybrid_hour<P: Probe>(
     hybrid: &HybridSystem,
+    cold: &ColdSide,
     asked: &Asked<'_>,
     row: &mut Row,
     probe: &mut P,
@@ -39,7 +28,7 @@ pub(super) fn hybrid_hour<P: Probe>(
         }
     };
     let mut by_machine = *row;
-    by_machine_hour(hybrid, asked, &mut by_machine, &mut Unwatched);
+    by_machine_hour(hybrid, cold, asked, &mut by_machine, &mut Unwatched);
     // The step charges the pump of a ground loop after the hour is decided.
     by_machine.source_side_kwh += hybrid
         .machine
@@ -51,7 +40,7 @@ pub(super) fn hybrid_hour<P: Probe>(
         .rule
         .decide(row.outdoor_c, effort(by_machine), effort(by_boiler))
     {
-        Side::Machine => by_machine_hour(hybrid, asked, row, probe),
+        Side::Machine => by_machine_hour(hybrid, cold, asked, row, probe),
         Side::Boiler => *row = by_boiler,
     }
 }
@@ -60,6 +49,7 @@ pub(super) fn hybrid_hour<P: Probe>(
 /// drawn is always the boiler's.
 fn by_machine_hour<P: Probe>(
     hybrid: &HybridSystem,
+    cold: &ColdSide,
     asked: &Asked<'_>,
     row: &mut Row,
     probe: &mut P,
@@ -67,16 +57,8 @@ fn by_machine_hour<P: Probe>(
     let HybridSystem {
         machine, boiler, ..
     } = hybrid;
-    let lacking_kwh = heat_pump_hour(
-        machine,
-        machine.backup_kw + boiler.output_kw,
-        asked.home,
-        asked.cold,
-        asked.water,
-        asked.rooms,
-        row,
-        probe,
-    );
+    let lift_kw = machine.backup_kw + boiler.output_kw;
+    let lacking_kwh = heat_pump_hour(machine, lift_kw, cold, asked, row, probe);
     let has_store = asked
         .home
         .hot_water

@@ -1,6 +1,6 @@
 //! An hour of a heat pump: hot water, rooms, backup; its place between source and emitters.
 
-use super::rooms::Rooms;
+use super::rooms::Asked;
 use super::row::{Flags, Row};
 use super::step::{DutyKind, Probe};
 use super::system::{MachineSystem, State};
@@ -30,13 +30,14 @@ pub(super) fn ground_hour(hour: usize, system: &MachineSystem, state: &mut State
 pub(super) fn heat_pump_hour<P: Probe>(
     system: &MachineSystem,
     lift_kw: f64,
-    home: &Home,
     cold: &ColdSide,
-    water: &StoreStep,
-    rooms: &Rooms,
+    asked: &Asked<'_>,
     row: &mut Row,
     probe: &mut P,
 ) -> f64 {
+    let Asked {
+        home, water, rooms, ..
+    } = *asked;
     let mut hours_left = 1.0;
     let mut unlifted_kwh = 0.0;
     if water.wanted_kwh > 0.0 {

@@ -4,7 +4,16 @@ use super::row::{Flags, Row};
 use super::site::Plan;
 use super::system::State;
 use crate::extremes::{greater, lesser};
-use crate::home::Home;
+use crate::home::{Home, StoreStep};
+
+/// What is asked of a heating system in an hour, and of which home.
+pub(super) struct Asked<'a> {
+    pub hour: usize,
+    pub plan: &'a Plan,
+    pub home: &'a Home,
+    pub water: &'a StoreStep,
+    pub rooms: &'a Rooms,
+}
 
 /// What the rooms want in an hour.
 #[derive(Clone, Copy)]

@@ -4,14 +4,15 @@ use std::ops::Range;
 
 use super::Sink;
 use super::boiler::boiler_hour;
-use super::hybrid::{Asked, hybrid_hour};
+use super::hybrid::hybrid_hour;
 use super::machine::{ground_hour, heat_pump_hour};
-use super::rooms::Rooms;
+use super::rooms::{Asked, Rooms};
 use super::row::{Flags, Row};
 use super::site::{Plan, Site};
-use super::system::{Heating, State, System};
+use super::system::{Heating, MachineSystem, State, System};
 use super::water::{draw, store_hour};
 use crate::heatpump::{ColdSide, Delivered, Duty};
+use crate::source::Memory;
 
 /// Rooms this much below the set point at the end of an hour are short of heat, K. A choice of ours: about what people notice.
 const SHORT_K: f64 = 1.0;
@@ -106,26 +107,20 @@ fn fill<P: Probe>(
     let water = draw(home, site, hour, shift_k, state, row);
     let rooms = Rooms::ask(hour, home, plan, gains_kw, state, row);
 
+    let asked = Asked {
+        hour,
+        plan,
+        home,
+        water: &water,
+        rooms: &rooms,
+    };
+
     // What answers.
     match &system.heating {
-        Heating::HeatPump(system) => {
-            let offer = system.source.offer(hour, outdoor_c, &state.ground);
-            let cold = ColdSide {
-                open_c: offer.open_c,
-                k_per_kw: offer.k_per_kw,
-                relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
-            };
-            heat_pump_hour(
-                system,
-                system.backup_kw,
-                home,
-                &cold,
-                &water,
-                &rooms,
-                row,
-                probe,
-            );
-            ground_hour(hour, system, state, row);
+        Heating::HeatPump(machine) => {
+            let cold = cold_side(machine, hour, site, &state.ground);
+            heat_pump_hour(machine, machine.backup_kw, &cold, &asked, row, probe);
+            ground_hour(hour, machine, state, row);
         }
         Heating::Boiler {
             boiler,
@@ -134,21 +129,8 @@ fn fill<P: Probe>(
             boiler_hour(boiler, *fixed_flow_c, home, &water, &rooms, row);
         }
         Heating::Hybrid(hybrid) => {
-            let offer = hybrid.machine.source.offer(hour, outdoor_c, &state.ground);
-            let cold = ColdSide {
-                open_c: offer.open_c,
-                k_per_kw: offer.k_per_kw,
-                relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
-            };
-            let asked = Asked {
-                hour,
-                plan,
-                home,
-                cold: &cold,
-                water: &water,
-                rooms: &rooms,
-            };
-            hybrid_hour(hybrid, &asked, row, probe);
+            let cold = cold_side(&hybrid.machine, hour, site, &state.ground);
+            hybrid_hour(hybrid, &cold, &asked, row, probe);
             ground_hour(hour, &hybrid.machine, state, row);
         }
         Heating::DirectElectric { output_kw } => {
@@ -180,6 +162,16 @@ fn fill<P: Probe>(
 
     // What it cost.
     charge_energy(plan, hour, row);
+}
+
+/// What a machine's source offers in an hour, after what the ground remembers.
+fn cold_side(machine: &MachineSystem, hour: usize, site: &Site, ground: &Memory) -> ColdSide {
+    let offer = machine.source.offer(hour, site.outdoor_c[hour], ground);
+    ColdSide {
+        open_c: offer.open_c,
+        k_per_kw: offer.k_per_kw,
+        relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
+    }
 }
 
 /// Cost and carbon of an hour's energy at the plan's signals.

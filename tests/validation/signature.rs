@@ -133,7 +133,7 @@ fn own_meter(path: &Path) -> Limits {
     let mut ledger = Ledger::default();
     case.run_one(&case.contenders[0], Some(&mut ledger))
         .unwrap();
-    let mut months = vec![0.0; 12];
+    let mut months = [0.0; 12];
     for (hour, row) in case.site.civil.iter().zip(&ledger.rows) {
         months[hour.month0()] += row.fuel_kwh;
     }
