@@ -8,7 +8,7 @@ use divan::{Bencher, black_box};
 use winterledger::brief::Brief;
 use winterledger::source::{
     AnnualSwing, Antifreeze, Bore, Brine, BuriedLoop, Filling, Layout, LoopDesign, Memory, Pipe,
-    Pump, Soil,
+    Pump, Soil, UTubes,
 };
 use winterledger::study::{loop_life, shortest_loop};
 
@@ -40,6 +40,7 @@ fn four_bores() -> LoopDesign {
         layout: Layout::Bores {
             bores,
             filling: Filling::Resistance(0.1),
+            u_tubes: UTubes::One,
         },
         pipe: Pipe {
             outside_m: 0.04,

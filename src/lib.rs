@@ -6,6 +6,7 @@
 pub mod air;
 pub mod bounds;
 pub mod calendar;
+pub mod extremes;
 pub mod fault;
 pub mod limits;
 pub mod locale;

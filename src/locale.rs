@@ -23,6 +23,30 @@ impl Locale {
     }
 }
 
+impl Locale {
+    /// A sentence written for a program in the form of the place: decimal marks, dates (`2024-01-14`), and amounts whose currency
+    /// code stands behind them (`80 GBP`).
+    pub fn told(&self, sentence: &str, currency: &str) -> String {
+        let words = sentence.split(' ').collect::<Vec<_>>();
+        let mut out: Vec<String> = Vec::with_capacity(words.len());
+        for word in words {
+            let bare = word.trim_end_matches(|c: char| c.is_ascii_punctuation());
+            let behind = &word[bare.len()..];
+            let amount = (bare == currency).then(|| out.last()?.parse::<f64>().ok());
+            if let Some(amount) = amount.flatten() {
+                let plus = out.pop().filter(|number| number.starts_with('+'));
+                let money = self.marks.money(currency, amount) + behind;
+                out.push(plus.map_or(money.clone(), |_| format!("+{money}")));
+            } else if let Ok(date) = NaiveDate::parse_from_str(bare, "%Y-%m-%d") {
+                out.push(self.dates.write(date) + behind);
+            } else {
+                out.push(self.marks.localized(word));
+            }
+        }
+        out.join(" ")
+    }
+}
+
 /// Order of a date.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
 pub enum DateOrder {
@@ -230,6 +254,23 @@ mod tests {
         assert_eq!(DateOrder::DayFirst.write(date), "14 January 2024");
         assert_eq!(DateOrder::MonthFirst.write(date), "January 14, 2024");
         assert_eq!(DateOrder::YearFirst.write(date), "2024-01-14");
+    }
+
+    #[test]
+    fn a_sentence_takes_the_form_of_the_place() {
+        let mut place = Locale::default();
+        let said = "between 80 EUR and 1370 EUR cheaper, from 2024-01-14, 1.5 K; a EUR; +5 EUR.";
+        assert_eq!(
+            place.told(said, "EUR"),
+            "between €80 and €1,370 cheaper, from 14 January 2024, 1.5 K; a EUR; +€5."
+        );
+        place.marks.decimal = ',';
+        place.marks.thousands = Some('.');
+        place.dates = DateOrder::YearFirst;
+        assert_eq!(
+            place.told(said, "EUR"),
+            "between €80 and €1.370 cheaper, from 2024-01-14, 1,5 K; a EUR; +€5."
+        );
     }
 
     #[test]

@@ -324,7 +324,7 @@ fn two_duties_in_one_hour_keep_their_own_cop() {
     assert!(hours_of_water < 8760 / 4, "{hours_of_water}");
 }
 
-/// Greensboro TMY3 from PyPI pvlib (tests/data/README.md). Hourly degree-days at 15.5 °C are 1694 K·d (methods §8, computed with
+/// Greensboro TMY3 from PyPI pvlib (tests/data/README.md). Hourly degree-days at 15.5 °C are 1694 K·d (computed with
 /// pandas, printed to the day); a home without storage takes coefficient × degree-hours.
 #[test]
 fn yearly_heat_is_coefficient_times_degree_hours_on_an_open_file() {

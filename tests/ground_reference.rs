@@ -5,9 +5,12 @@ use std::f64::consts::TAU;
 use std::path::Path;
 
 use winterledger::source::{
-    AnnualSwing, Antifreeze, Bore, Brine, BuriedLoop, EARLY_ERROR, Filling, Layout, LoopDesign,
-    Memory, Pipe, Pump, Soil, Trench, undisturbed_c,
+    BuriedLoop, EARLY_ERROR, Layout, LoopDesign, Memory, Soil, Trench, undisturbed_c,
 };
+
+#[path = "reference/ground_loops.rs"]
+mod ground_loops;
+use ground_loops::{bore, bores, design, given};
 
 fn rows(name: &str) -> Vec<Vec<String>> {
     let path = Path::new(env!("CARGO_MANIFEST_DIR"))
@@ -22,68 +25,6 @@ fn rows(name: &str) -> Vec<Vec<String>> {
 
 fn number(text: &str) -> f64 {
     text.parse().unwrap()
-}
-
-fn bore(depth_m: f64, buried_m: f64, radius_m: f64, x_m: f64, y_m: f64) -> Bore {
-    Bore {
-        x_m,
-        y_m,
-        depth_m,
-        buried_m,
-        radius_m,
-    }
-}
-
-/// The fields of the script.
-fn field(name: &str) -> Vec<Bore> {
-    match name {
-        "one" => vec![bore(100.0, 4.0, 0.075, 0.0, 0.0)],
-        "two" => vec![
-            bore(80.0, 1.0, 0.065, 0.0, 0.0),
-            bore(80.0, 1.0, 0.065, 6.0, 0.0),
-        ],
-        "four" => [(0.0, 0.0), (0.0, 6.0), (6.0, 0.0), (6.0, 6.0)]
-            .map(|(x, y)| bore(100.0, 1.0, 0.065, x, y))
-            .to_vec(),
-        "unequal" => vec![
-            bore(120.0, 1.0, 0.065, 0.0, 0.0),
-            bore(70.0, 3.0, 0.065, 5.0, 0.0),
-            bore(95.0, 2.0, 0.075, 2.0, 7.0),
-        ],
-        other => panic!("{other}"),
-    }
-}
-
-fn design(layout: Layout, soil: Soil) -> LoopDesign {
-    LoopDesign {
-        layout,
-        pipe: Pipe {
-            outside_m: 0.04,
-            wall_m: 0.0037,
-            conductivity_w_per_m_k: 0.42,
-        },
-        soil,
-        surface: AnnualSwing {
-            mean_c: 10.0,
-            amplitude_k: 8.0,
-            coldest_hour: 600.0,
-        },
-        gradient_k_per_m: 0.0,
-        brine: Brine::new(Antifreeze::EthyleneGlycol, 0.3).unwrap(),
-        flow_kg_per_s: 0.5,
-        pump: Pump::Efficiency(0.3),
-        recharge_kwh: 0.0,
-    }
-}
-
-fn bores(name: &str, soil: Soil) -> LoopDesign {
-    design(
-        Layout::Bores {
-            bores: field(name),
-            filling: Filling::Resistance(0.1),
-        },
-        soil,
-    )
 }
 
 /// The draw of the script, kW, for any hour of any year.
@@ -150,11 +91,7 @@ fn the_line_source_lags_a_cylinder_by_at_most_the_stated_bound() {
             diffusivity_m2_per_s: 1.0 / 3600.0,
         };
         let one = bore(1e5, 1e5, 1.0, 0.0, 0.0);
-        let layout = Layout::Bores {
-            bores: vec![one],
-            filling: Filling::Resistance(0.1),
-        };
-        let line = design(layout, soil).wall_response(&[fourier])[0];
+        let line = given(vec![one], soil).wall_response(&[fourier])[0];
         greatest = greatest.max(number(&row[1]) - line);
         assert!(
             fourier < 5.0 || number(&row[1]) - line < 0.13,

@@ -151,7 +151,7 @@ fn hot_water_is_drawn_by_the_profile_and_heated_in_blocks() {
             row.water_heat_kwh() - row.water_drawn_kwh - row.store_loss_kwh - row.store_stored_kwh;
         assert!(balance.abs() < 1e-9);
     }
-    // methods §11: about 57 W from 200 L at 50 °C. Blocks: most hours nothing, a few hours much.
+    // EU 812/2013 class C (secondary source): about 57 W from 200 L at 50 °C. Blocks: most hours nothing, a few hours much.
     let lost = rows.iter().map(|row| row.store_loss_kwh).sum::<f64>() / rows.len() as f64;
     assert!((0.045..0.057).contains(&lost), "{lost}");
     let heated = rows.iter().filter(|row| row.water_heat_kwh() > 0.0).count();

@@ -74,7 +74,7 @@ fn the_worst_room_its_remedy_the_pattern_and_the_meter_are_told() {
     assert!(number(larger, "spf_h4") > number(one, "spf_h4") + 0.3);
     assert_eq!(number(&one["capital_parts"], "radiators"), 450.0);
     assert_eq!(number(one, "capital"), 9850.0);
-    // methods §16: the pattern moves the bill, by 5 to 17 % of heat.
+    // Common practice, no source: the pattern moves the bill, by 5 to 17 % of heat.
     let share = number(larger, "pattern_heat_kwh")
         / (number(larger, "space_heat_kwh") - number(larger, "pattern_heat_kwh"));
     assert!((0.04..0.17).contains(&share), "{share}");

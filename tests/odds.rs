@@ -8,7 +8,8 @@ use std::process::Output;
 use assert_cmd::Command;
 use winterledger::brief::Brief;
 use winterledger::heatpump::{ColdSide, Delivered, Duty, HeatPump, Sheet, fit};
-use winterledger::study::odds::{Hypercube, Sampler, shares};
+use winterledger::study::Lever;
+use winterledger::study::odds::{Declared, Doubts, Hypercube, Range, Sampler, shares};
 
 /// A function of a point of the unit cube.
 type Function<'a> = &'a dyn Fn(&[f64]) -> f64;
@@ -61,10 +62,10 @@ fn shares_agree_with_another_program() {
         for row in rows.iter().filter(|row| &row[0] == name) {
             let share = found[row[1].parse::<usize>().unwrap()].share;
             let number = |column: usize| row[column].parse::<f64>().unwrap();
-            // 24 classes smooth steep sides a little, 8000 points have an error of about 0.01; SALib's own error is added for its column.
-            assert!((share - number(2)).abs() < 0.025, "{row:?} {share}");
+            // 8000 points have an error of about 0.007: three of those; SALib's own error is added for its column.
+            assert!((share - number(2)).abs() < 0.02, "{row:?} {share}");
             assert!(
-                (share - number(3)).abs() < 0.025 + number(4),
+                (share - number(3)).abs() < 0.02 + number(4),
                 "{row:?} {share}"
             );
             checked += 1;
@@ -247,7 +248,7 @@ fn an_interrupted_answer_is_of_whole_blocks() {
     let answer = json(&output);
     assert_eq!(answer["stopped"], "interrupted");
     let samples = answer["samples"].as_u64().unwrap();
-    assert!(samples >= 50 && samples.is_multiple_of(50) && samples < 1_000_000);
+    assert!(samples >= 20 && samples.is_multiple_of(20) && samples < 1_000_000);
 }
 
 /// Two years in a file, the second 3 K colder: each sample meets one of them, the same for every system, so that the year of the
@@ -344,6 +345,39 @@ fn a_history_scaled_beforehand_is_that_of_the_whole_way() {
     }
     println!("largest difference of cost {:.3} %", 100.0 * worst);
     assert!(worst < 0.003, "{worst}");
+}
+
+/// A loop whose length is not known has a past of its own in every sample: two years of it, summed as a geometric row, in place of the
+/// fourteen before the one that is shown. Against these, year by year, the cost differs by less than the rounding of an answer.
+#[test]
+fn a_loop_of_unknown_length_is_aged_in_two_years() {
+    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("briefs/ground.toml");
+    let case = Brief::read(&path).unwrap().case;
+    let place = (1..case.contenders.len())
+        .find(|place| Lever::LoopLength.now(&case, *place).is_some())
+        .unwrap();
+    let now = Lever::LoopLength.now(&case, place).unwrap();
+    let declared = Declared {
+        lever: Lever::LoopLength,
+        choice: place,
+        range: Range::Even {
+            low: 0.8 * now,
+            high: 1.3 * now,
+        },
+    };
+    let mut doubts = Doubts::of(&case, &[declared], None);
+    doubts.levers.retain(|one| one.lever == Lever::LoopLength);
+    let sampler = Sampler::new(case.clone(), doubts, 1, 4).unwrap();
+    let mut worst: f64 = 0.0;
+    for sample in sampler.block(0).unwrap() {
+        let mut moved = case.clone();
+        let length = sampler.value(&sample, 0, place).unwrap();
+        moved.apply(place, &[(Lever::LoopLength, length)]).unwrap();
+        let whole = moved.run_one(&moved.contenders[place], None).unwrap();
+        worst = worst.max((sample.systems[place].cost / whole.costs.total - 1.0).abs());
+    }
+    println!("largest difference of cost {:.3} %", 100.0 * worst);
+    assert!(worst < 0.002, "{worst}");
 }
 
 fn steady(machine: &HeatPump, source_c: f64, flow_c: f64, share: f64) -> Delivered {

@@ -7,7 +7,7 @@ use std::path::{Path, PathBuf};
 /// The rooms by rank, as DEVELOPERS.md draws them.
 const RANKS: &[&[&str]] = &[
     &[
-        "air", "bounds", "calendar", "fault", "limits", "locale", "problem", "units",
+        "air", "bounds", "calendar", "extremes", "fault", "limits", "locale", "problem", "units",
     ],
     &["document", "refrigerant", "series", "weather"],
     &["carbon", "heater", "heatpump", "home", "source", "tariff"],

@@ -54,7 +54,7 @@ fn line(points: &[RatingPoint], at_c: f64, value: impl Fn(&RatingPoint) -> f64) 
     value(a) + (at_c - a.outdoor_c) / (b.outdoor_c - a.outdoor_c) * (value(b) - value(a))
 }
 
-/// Which of the two ways that methods §1 tells apart.
+/// Which of the two ways of correcting for cycling, at the points or bin by bin.
 #[derive(Clone, Copy, PartialEq)]
 enum Cycling {
     /// Corrected at the points, as the worked example and our rating do.
@@ -240,7 +240,7 @@ fn json(arguments: &[&str]) -> Value {
     serde_json::from_slice(&output.get_output().stdout).unwrap()
 }
 
-/// The worked example of methods §1 as declared points on a sheet, to its printed digits, through the command.
+/// The worked example of EN 14825 (inputs \[from memory\], result computed) as declared points on a sheet, to its printed digits, through the command.
 #[test]
 fn declared_points_are_rated_as_the_worked_example() {
     let folder = tempfile::tempdir().unwrap();

@@ -340,7 +340,7 @@ fn the_command_finds_the_home_that_made_the_readings() {
         told.contains("the reading of 2023-08-01 is an estimate"),
         "{told}"
     );
-    // methods §14: 6935 homes, median 198 W/K, standard deviation 119; balance temperature 15.2 °C, sd 2.3 (doi 10.5334/bc.670).
+    // 6935 homes, median 198 W/K, standard deviation 119; balance temperature 15.2 °C, sd 2.3 (doi 10.5334/bc.670).
     assert!((number("heat_loss_w_per_k") - 198.0).abs() < 2.0 * 119.0);
     assert!((number("base_temperature_c") - 15.2).abs() < 2.0 * 2.3);
 }

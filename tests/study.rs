@@ -445,7 +445,7 @@ fn odds_keep_their_promises() {
     assert!(String::from_utf8_lossy(&refused.stderr).contains("more than a million samples"));
 }
 
-/// Emitters stay while the heat loss varies, so that the SPF falls with it (methods §16).
+/// Emitters stay while the heat loss varies, so that the SPF falls with it.
 #[test]
 fn the_spf_falls_with_heat_loss_through_the_same_radiators() {
     let pair = pair(2);

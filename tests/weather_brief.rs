@@ -53,7 +53,13 @@ fn brief(folder: &Path, weather: &str) -> PathBuf {
 fn estimate(weather: &str) -> Value {
     let folder = tempfile::tempdir().unwrap();
     let path = brief(folder.path(), weather);
-    let output = winterledger(&["estimate", path.to_str().unwrap(), "--format", "json"]);
+    let output = winterledger(&[
+        "estimate",
+        path.to_str().unwrap(),
+        "--part-year",
+        "--format",
+        "json",
+    ]);
     let told = String::from_utf8_lossy(&output.stderr);
     assert!(output.status.success(), "{weather}\n{told}");
     serde_json::from_slice(&output.stdout).unwrap()
@@ -267,6 +273,7 @@ fn several_years_run_as_several_years() {
     let output = winterledger(&[
         "estimate",
         path.to_str().unwrap(),
+        "--part-year",
         "--format",
         "json",
         "--out",
@@ -361,6 +368,7 @@ fn repaired_hours_are_flagged_in_the_ledger() {
     let output = winterledger(&[
         "estimate",
         path.to_str().unwrap(),
+        "--part-year",
         "--format",
         "json",
         "--out",

@@ -18,7 +18,9 @@ pub use saturation::{
     dew_point_c, relative_humidity_at_dew_point, saturation_pressure_over_water_pa,
     saturation_pressure_pa,
 };
-pub use tabulated::{humidity_ratio_at_station, humidity_ratio_over_ice};
+pub use tabulated::{
+    humidity_ratio_at_station, humidity_ratio_over_ice, tabulated_saturation_pressure_pa,
+};
 
 /// Pressure of the standard atmosphere at sea level, Pa (ASHRAE Fundamentals 2017, chapter 1, equation 3).
 pub const SEA_LEVEL_PA: f64 = 101_325.0;

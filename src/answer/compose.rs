@@ -2,6 +2,7 @@
 
 use super::account::{bill_answers, meter_answers, shifting_answer, signal_gap};
 use super::bills::pair;
+use super::comfort::leaves_cold;
 use super::estimate::{
     Assumption, Estimate, GroundShown, HomeUsed, InputFile, MonthAnswer, SystemAnswer, WeatherUsed,
 };
@@ -16,9 +17,10 @@ use crate::problem::{Finding, Problems, Severity};
 use crate::signature::{DailyWeather, Signature};
 use crate::source::Memory;
 use crate::study::{
-    BalancePoint, Case, Contender, DesignPoint, Outcome, balance_point, design_point, under_pattern,
+    BalancePoint, Case, Contender, DesignLimit, DesignPoint, Outcome, balance_point, design_point,
+    limited_by_flow, under_pattern,
 };
-use crate::units::Fuel;
+use crate::units::{Fuel, as_set};
 use crate::year::Heating;
 
 /// What an estimate tells beside the figures of its case.
@@ -103,8 +105,10 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         }
         system.shifting = shifting_answer(case, contender)?;
         findings.extend(signal_gap(contender, outcome)?);
-        findings.extend(shortfalls(&system));
         system.ground = ground_shown(case, contender, outcome)?;
+        findings.extend(shortfalls(&system));
+        findings.extend(water_beyond_reach(contender, outcome));
+        findings.extend(hot_discharge(contender, outcome, &system));
         findings.extend(source_too_cold(&system));
         systems.push(system);
     }
@@ -126,6 +130,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
             mean_c: site.outdoor_c.iter().sum::<f64>() / site.outdoor_c.len() as f64,
             min_c: site.outdoor_c.iter().copied().fold(f64::INFINITY, f64::min),
             repaired_hours: site.repaired.iter().filter(|&&repaired| repaired).count(),
+            part_year_days: None,
         },
         home: HomeUsed {
             label: told.home_label.clone(),
@@ -138,6 +143,7 @@ pub fn compose(case: &Case, outcomes: &[Outcome], told: &Told) -> Result<Estimat
         },
         systems,
         patterns: Vec::new(),
+        what_if: Vec::new(),
         break_even: break_evens,
         odds: None,
         lifetime: lifetime(case, outcomes),
@@ -178,6 +184,23 @@ fn system(
         )
     };
     let balance_points = (balance(false), balance(true));
+    let balance_limit = balance_points
+        .0
+        .zip(heating.machine())
+        .map(|(point, machine)| {
+            let at_flow = limited_by_flow(
+                &contender.system,
+                machine,
+                contender.indoor_c,
+                point,
+                ground,
+            );
+            if at_flow {
+                ", limited by its highest flow"
+            } else {
+                ""
+            }
+        });
     let today = &all[0];
     let compared = |mine: f64, todays: f64| (!contender.today).then_some(todays - mine);
     let costs = &outcome.costs;
@@ -234,19 +257,23 @@ fn system(
         seasonal_efficiency: sums.fuel_efficiency(),
         balance_point_c: balance_points.0.and_then(BalancePoint::c),
         balance_point_with_hot_water_c: balance_points.1.and_then(BalancePoint::c),
-        balance_point: balance_points.0.map(balance_words),
+        balance_point: balance_points
+            .0
+            .map(|point| balance_words(point) + balance_limit.unwrap_or_default()),
         peak_electric_kw: outcome
             .years
             .iter()
             .map(|year| year.peak_electric_kw)
             .fold(0.0, f64::max),
         hours_backup: outcome.mean(|year| f64::from(year.hours_backup)),
+        hours_stopped: is_machine.then(|| outcome.mean(|year| f64::from(year.hours_stopped))),
         hours_short: outcome.mean(|year| f64::from(year.hours_short)),
         hours_water_short: outcome.mean(|year| f64::from(year.hours_water_short)),
         pattern: contender.pattern.words(),
         pattern_heat_kwh: None,
         pattern_cost: None,
         store: store(contender, &design),
+        leaves_cold: leaves_cold(contender, outcome),
         design: design_answer(&design),
         rooms: None,
         min_indoor_c: outcome
@@ -347,6 +374,19 @@ fn shortfalls(system: &SystemAnswer) -> Vec<Finding> {
             "a larger store, a higher set point, longer reheat windows or more output would be needed",
         ));
     }
+    let stopped = system
+        .hours_stopped
+        .filter(|&hours| hours >= 0.5 && system.ground.is_none());
+    if let Some(hours) = stopped {
+        found.push(Finding::new(
+            Severity::Caution,
+            format!(
+                "the machine of \"{label}\" stands in {hours:.0} hours a year because its source is outside its limits; backup and immersion heater use {:.0} kWh",
+                system.backup_kwh.unwrap_or(0.0)
+            ),
+            "a machine made for such weather, or backup for the whole load of those hours, would be needed",
+        ));
+    }
     if !system.design.covered {
         found.push(Finding::new(
             Severity::Caution,
@@ -377,6 +417,63 @@ fn source_too_cold(system: &SystemAnswer) -> Option<Finding> {
     ))
 }
 
+/// A machine that the coldest hour of its source and the hottest flow asked of it would overheat.
+fn hot_discharge(
+    contender: &Contender,
+    outcome: &Outcome,
+    system: &SystemAnswer,
+) -> Option<Finding> {
+    let machine = &contender.system.heating.machine()?.machine;
+    let coldest_c = outcome
+        .years
+        .iter()
+        .map(|year| year.min_source_c)
+        .fold(f64::INFINITY, f64::min);
+    let water = contender.system.home.hot_water.as_ref();
+    let store_c = water
+        .and_then(|water| water.store)
+        .map_or(0.0, |store| store.set_point_c + store.coil_k);
+    let flow_c = system.design.heater_flow_c.max(store_c);
+    coldest_c
+        .is_finite()
+        .then(|| machine.hot_discharge(coldest_c, flow_c))?
+}
+
+/// A set point of the store that the machine cannot reach: the immersion heater lifts the rest, day after day.
+fn water_beyond_reach(contender: &Contender, outcome: &Outcome) -> Option<Finding> {
+    let machine = contender.system.heating.machine()?;
+    let store = contender.system.home.hot_water.as_ref()?.store?;
+    let highest_c = machine.machine.limits().highest_flow_anywhere();
+    let reach_c = highest_c - store.coil_k;
+    let immersion_kwh = outcome.mean_sums().immersion_kwh;
+    if store.set_point_c <= reach_c || immersion_kwh < 0.5 {
+        return None;
+    }
+    let price = &contender.plan.electricity.price;
+    let mean_price = price.iter().sum::<f64>() / price.len() as f64;
+    let instead = match store.hygiene {
+        None => {
+            "a lower set point with a weekly cycle, hygiene = \"immersion\", would cost less; local rules on legionella decide"
+        }
+        Some(_) => "a lower set point would cost less; local rules on legionella decide",
+    };
+    Some(Finding::new(
+        Severity::Warning,
+        format!(
+            "the machine of \"{}\" reaches {} °C in this store (highest flow {} °C less {} K of the coil), which is to be at {} °C; the \
+             immersion heater lifts the rest: {immersion_kwh:.0} kWh, about {:.0} {} a year",
+            contender.system.label,
+            as_set(reach_c),
+            as_set(highest_c),
+            as_set(store.coil_k),
+            as_set(store.set_point_c),
+            immersion_kwh * mean_price,
+            contender.electricity.tariff.currency,
+        ),
+        instead,
+    ))
+}
+
 /// Stored hot water below the temperature of UK HSE guidance: 60 °C in the store, at the taps no less than 50 °C within a minute.
 fn cool_stores(case: &Case) -> Option<Finding> {
     const HYGIENE_C: f64 = 60.0;
@@ -401,7 +498,7 @@ fn cool_stores(case: &Case) -> Option<Finding> {
         Finding::new(
             Severity::Caution,
             format!("hot water is stored below {HYGIENE_C:.0} °C by {}", cool.join(", ")),
-            "legionella can grow there, so a regular hygiene cycle is usual, and water above 50 °C scalds; follow local rules and a licensed installer",
+            "legionella can grow there, so a weekly hygiene cycle is usual (hygiene = \"immersion\" or \"machine\" under hot_water in the brief), and water above 50 °C scalds; follow local rules and a licensed installer",
         )
     })
 }
@@ -414,8 +511,9 @@ fn hygiene_cycles(case: &Case) -> Option<Finding> {
         .filter_map(|contender| {
             let cycle = contender.system.home.hot_water.as_ref()?.store?.hygiene?;
             Some(format!(
-                "\"{}\" to {:.0} °C",
-                contender.system.label, cycle.target_c
+                "\"{}\" to {} °C",
+                contender.system.label,
+                as_set(cycle.target_c)
             ))
         })
         .collect();
@@ -431,14 +529,28 @@ fn hygiene_cycles(case: &Case) -> Option<Finding> {
 fn design_answer(design: &DesignPoint) -> DesignAnswer {
     let margin = design.carried_kw() / design.load_kw - 1.0;
     let margin_percent = margin * 100.0;
+    let by_emitters = design.limit() == DesignLimit::Emitters;
     let mut sentence = format!(
-        "at {:.1} °C the load of {:.1} kW needs a flow of {:.0} °C; there it gives {:.1} kW",
+        "at {:.1} °C the load of {:.1} kW needs a flow of {:.0} °C{}; there it gives {:.1} kW",
         design.outdoor_c,
         design.load_kw,
         design.heater_flow_c,
-        design.carried_kw()
+        match design.highest_flow_c {
+            Some(highest_c) if design.limit() == DesignLimit::HighestFlow =>
+                format!(", its highest is {highest_c:.0} °C"),
+            _ => String::new(),
+        },
+        design.output_kw
     );
-    if margin >= 0.0 {
+    if by_emitters {
+        sentence += &format!(
+            ", the emitters at their greatest flow {:.1} kW",
+            design.emitters_kw
+        );
+    }
+    if margin >= 0.0 && by_emitters {
+        sentence += &format!(", {margin_percent:.0} % more than the load");
+    } else if margin >= 0.0 {
         sentence += &format!(", {margin_percent:.0} % more");
     } else {
         sentence += &format!(", {:.1} kW short", design.load_kw - design.carried_kw());
@@ -461,6 +573,12 @@ fn design_answer(design: &DesignPoint) -> DesignAnswer {
         emitters_kw: design.emitters_kw,
         backup_kw: design.backup_kw,
         margin_percent,
+        limited_by: match design.limit() {
+            DesignLimit::Emitters => "emitters",
+            DesignLimit::HighestFlow => "highest flow",
+            DesignLimit::Output => "output",
+        }
+        .to_owned(),
         covered: design.covered(),
         water_l_per_min: design.water_l_per_min,
         sentence,

@@ -9,6 +9,7 @@ use super::home::{DesignAnswer, MeteredAnswer, PatternComparison, RoomsAnswer, S
 use super::lifetime::LifetimeAnswer;
 use super::odds::OddsSummary;
 use super::weather_years::{YearAnswer, YearSpread};
+use super::what_if::WhatIf;
 use crate::problem::Finding;
 
 /// The comparison of all systems of a brief.
@@ -28,6 +29,9 @@ pub struct Estimate {
     /// How sure it is: chances from a modest sample; absent where none was drawn. The command `odds` says more.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub odds: Option<OddsSummary>,
+    /// What moves the saving of the choices that the report puts in front: the cheapest four. Absent where nothing asked for it.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub what_if: Vec<WhatIf>,
     /// Money and carbon over the years; absent where no choice's capital is known.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub lifetime: Option<LifetimeAnswer>,
@@ -42,6 +46,17 @@ pub struct Estimate {
     pub findings: Vec<Finding>,
     /// The files it was made from.
     pub inputs: Vec<InputFile>,
+}
+
+impl Estimate {
+    /// The same estimate of less than a year: what would be said of a year is left out.
+    pub fn of_days(mut self, days: usize) -> Self {
+        self.weather.part_year_days = Some(days);
+        self.break_even.clear();
+        self.lifetime = None;
+        self.odds = None;
+        self
+    }
 }
 
 /// A file that was read.
@@ -70,6 +85,9 @@ pub struct WeatherUsed {
     pub min_c: f64,
     /// Hours that were repaired.
     pub repaired_hours: usize,
+    /// Days run, where they are less than a year: then every figure is of these days and nothing is said of a year.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub part_year_days: Option<usize>,
 }
 
 /// The home an estimate was run for, as it is today.
@@ -169,6 +187,9 @@ pub struct SystemAnswer {
     pub hours_backup: f64,
     /// Hours that ended more than 1 K below the set point.
     pub hours_short: f64,
+    /// Hours a year in which the machine stood because its source was outside its limits.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub hours_stopped: Option<f64>,
     /// Hours in which hot water came out too cool.
     pub hours_water_short: f64,
     /// Lowest indoor temperature of all years.
@@ -181,6 +202,10 @@ pub struct SystemAnswer {
     /// Cost above that of the same system under today's pattern; absent when the pattern is today's.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub pattern_cost: Option<f64>,
+    /// Why it is no fair answer however cheap it is: rooms, design day or hot water that it leaves cold, in words; absent where all
+    /// are kept warm. Above stated bounds only; findings tell every hour.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub leaves_cold: Option<String>,
     /// The design point.
     pub design: DesignAnswer,
     /// The room table's verdict, where there is one.

@@ -157,7 +157,7 @@ pub struct SizingAnswer {
 
 /// What every loop is told with.
 pub const GROUND_CAUTION: &str = "A figure for a decision, not a loop design: ground differs from its class, and neighbours' loops count. \
-Design, drilling, excavation, antifreeze and permits belong to licensed people and local rules; a test in the ground comes before a field is drilled.";
+Ethylene glycol is poisonous. Design, drilling, excavation, antifreeze and permits belong to licensed people and local rules; a test in the ground comes before a field is drilled.";
 
 /// Makes the answer of one ground source; nothing for a system without one.
 pub fn ground_answer(
@@ -370,6 +370,10 @@ fn life_findings(machine: &MachineSystem, life: &[LoopYear], label: &str) -> Vec
         .iter()
         .max_by_key(|year| year.hours_wall_frozen)
         .filter(|year| year.hours_wall_frozen > 0);
+    let lowest_wall_c = life
+        .iter()
+        .filter_map(|year| year.lowest_wall_c)
+        .fold(f64::INFINITY, f64::min);
     if let Some(year) = frozen {
         let what = match buried.design.layout {
             Layout::Bores { .. } => "grout and ground at the bore's wall",
@@ -381,7 +385,7 @@ fn life_findings(machine: &MachineSystem, life: &[LoopYear], label: &str) -> Vec
                 "{what} of \"{label}\" is below 0 °C in {} hours of year {}",
                 year.hours_wall_frozen, year.year
             ),
-            "freezing lifts soil and can crack grout; the heat that freezing gives is not counted",
+            format!("freezing lifts soil and can crack grout; the heat that freezing gives is not counted, so that the brine is shown too cold then, by at most {:.1} K", -lowest_wall_c),
         ));
     }
     findings

@@ -107,6 +107,8 @@ pub struct DesignAnswer {
     pub backup_kw: Option<f64>,
     /// Output over load without backup, less 1: below 0 it is short.
     pub margin_percent: f64,
+    /// What it is limited by: "emitters" at their greatest flow, the heater's "highest flow", or its "output".
+    pub limited_by: String,
     /// Whether heater and backup together carry the load.
     pub covered: bool,
     /// Water flow of the emitters.

@@ -10,7 +10,7 @@ use super::estimate::LeverAnswer;
 use crate::problem::Problems;
 use crate::source::Source;
 use crate::study::{Account, BreakEven, Case, Crossing, Lever, Measure, Outcome, Pair, break_even};
-use crate::units::Currency;
+use crate::units::{Currency, as_set};
 
 /// Where each lever makes each choice equal today's system, by the label of the choice; all of them side by side.
 pub(super) fn break_evens(
@@ -232,9 +232,12 @@ pub(super) fn condition(lever: Lever, now: f64, value: f64, pair: &Pair) -> Stri
         Lever::FlowTemperature => {
             // Close to where it stands a whole kelvin would say nothing.
             let digits = usize::from((value - now).abs() < 2.0);
-            format!("a design flow of {value:.digits$} °C (now {now:.0} °C)")
+            format!(
+                "a design flow of {value:.digits$} °C (now {} °C)",
+                as_set(now)
+            )
         }
-        Lever::Indoor => format!("rooms at {value:.1} °C (now {now:.1} °C)"),
+        Lever::Indoor => format!("rooms at {value:.1} °C (now {} °C)", as_set(now)),
         Lever::HotWater => times("hot water", "more", "less", None),
         Lever::RatedOutput => format!("a machine of {value:.1} kW (now {now:.1} kW)"),
         Lever::FieldFactor => format!(
@@ -270,7 +273,8 @@ fn rates(account: &Account, factor: f64) -> Option<String> {
     /// More bands than this nobody says aloud.
     const SAID: usize = 3;
     let tariff = &account.tariff;
-    let bands = &tariff.prices.last()?.bands;
+    let prices = tariff.prices.last()?;
+    let bands = &prices.bands;
     let factor = Decimal::from_f64(factor)?;
     let one = bands.len() == 1;
     let said: Option<Vec<String>> = bands
@@ -285,8 +289,13 @@ fn rates(account: &Account, factor: f64) -> Option<String> {
             })
         })
         .collect();
+    let tax = if prices.tax.energy_factor() > 1.0 {
+        " before tax"
+    } else {
+        ""
+    };
     said.filter(|said| !said.is_empty() && said.len() <= SAID)
-        .map(|said| said.join(", "))
+        .map(|said| said.join(", ") + tax)
 }
 
 #[cfg(test)]

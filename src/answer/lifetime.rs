@@ -2,6 +2,8 @@
 
 use serde::Serialize;
 
+use super::comfort::{leaves_cold, named};
+
 use crate::lifetime::{CashFlow, Outlay, Part, Path, Payback, payback};
 use crate::study::{Case, Outcome, cash_flow};
 
@@ -14,6 +16,8 @@ pub struct LifetimeAnswer {
     pub discount_rate: f64,
     /// How prices and carbon go on, in words.
     pub terms: String,
+    /// Whether and when today's system is bought anew within these years, in words: what the choices avoid.
+    pub todays_next: String,
     /// Today's system first, then every choice whose capital is known.
     pub systems: Vec<SystemLifetime>,
 }
@@ -25,6 +29,9 @@ pub struct SystemLifetime {
     pub label: String,
     /// Whether it heats the home today.
     pub today: bool,
+    /// Why it is no fair answer however cheap it is; absent where rooms and water are kept warm.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub leaves_cold: Option<String>,
     /// What it is made of.
     pub parts: Vec<PartAnswer>,
     /// What is paid at the beginning, before the grant.
@@ -51,6 +58,13 @@ pub struct SystemLifetime {
     pub each_year_its_own: bool,
     /// Year 0 is today; what a year costs stands at its end.
     pub by_year: Vec<LifetimeYear>,
+}
+
+impl SystemLifetime {
+    /// What it is called where it stands beside others: marked when it leaves rooms or water cold.
+    pub fn name(&self) -> String {
+        named(&self.label, &self.leaves_cold)
+    }
 }
 
 /// One part that is bought.
@@ -102,25 +116,48 @@ pub(super) fn lifetime(case: &Case, outcomes: &[Outcome]) -> Option<LifetimeAnsw
     let systems: Vec<SystemLifetime> = case
         .contenders
         .iter()
+        .zip(outcomes)
         .zip(&flows)
-        .filter_map(|(contender, flow)| {
+        .filter_map(|((contender, outcome), flow)| {
             let flow = flow.as_ref()?;
             let outlay = contender.outlay.clone().unwrap_or_default();
-            Some(system(
+            let mut answer = system(
                 &contender.system.label,
                 &outlay,
                 flow,
                 (!contender.today).then_some(today),
                 contender.life.is_some(),
-            ))
+            );
+            answer.leaves_cold = leaves_cold(contender, outcome);
+            Some(answer)
         })
         .collect();
     (systems.len() > 1).then(|| LifetimeAnswer {
         years: case.terms.years,
         discount_rate: case.terms.discount_rate,
         terms: terms_in_words(case),
+        todays_next: todays_next(case),
         systems,
     })
+}
+
+/// What the comparison holds of the day when today's system is worn out.
+fn todays_next(case: &Case) -> String {
+    let years = case.terms.years;
+    let today = case.contenders.first();
+    let parts = today.and_then(|today| today.outlay.as_ref());
+    let parts = parts.map_or(&[][..], |outlay| outlay.parts.as_slice());
+    let first = (0..years).find(|&year| parts.iter().any(|part| part.is_bought(year, years)));
+    match (parts, first) {
+        ([], _) => "What today's system costs to replace is not in this: the next one comes for nothing here, so payback and spending \
+                    speak against the choices. Give capital under [today] and due_in under [today.outlay]."
+            .to_owned(),
+        (_, Some(0)) => "Today's system is bought anew at once, and its cost over the years holds that.".to_owned(),
+        (_, Some(year)) => format!(
+            "Today's system must be bought anew too when it is worn out, first in year {year}; its cost over the years holds that."
+        ),
+        (_, None) => format!("Today's system lasts longer than the {years} years, so nothing for a new one is in its cost."),
+    }
 }
 
 fn system(
@@ -135,6 +172,7 @@ fn system(
     SystemLifetime {
         label: label.to_owned(),
         today: today.is_none(),
+        leaves_cold: None,
         parts: outlay.parts.iter().map(part).collect(),
         capital: outlay.capital(),
         grant: outlay.grant,

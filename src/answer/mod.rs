@@ -2,6 +2,7 @@
 
 mod account;
 pub mod bills;
+mod comfort;
 mod compose;
 pub mod cycle;
 mod estimate;
@@ -17,6 +18,7 @@ pub mod study;
 pub mod tariff;
 pub mod weather;
 mod weather_years;
+mod what_if;
 
 pub use account::{BillAnswer, MeterAnswer, MeterMonthAnswer, RunAnswer, ShiftingAnswer};
 pub use compose::{BillsTold, Told, compare_patterns, compose};
@@ -30,3 +32,4 @@ pub use home::{
 };
 pub use lever::short;
 pub use weather_years::{ExtentAnswer, YearAnswer, YearSpread};
+pub use what_if::{EmitterAnswer, SwingAnswer, WhatIf, what_if};

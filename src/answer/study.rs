@@ -2,14 +2,16 @@
 
 use serde::Serialize;
 
+use super::comfort::leaves_cold;
 use super::compose::Told;
 use super::estimate::{Assumption, LeverAnswer};
-use super::lever::{condition, lever_answer, price_unit, unit};
+use super::lever::{lever_answer, price_unit, unit};
 use super::lifetime::{LifetimeAnswer, lifetime};
+use super::what_if::{EmitterAnswer, SwingAnswer, emitters, moved};
 use crate::problem::{Finding, Problems};
 use crate::study::{
     Applies, Case, Lever, MachineSize, MachineSizes, Measure, Outcome, Pair, break_even,
-    break_even_spf, emitter_sizes, machine_sizes, swings, two_levers,
+    break_even_spf, machine_sizes, two_levers,
 };
 
 /// What would change the answer, choice by choice.
@@ -37,6 +39,9 @@ pub struct ChoiceStudy {
     pub cost: f64,
     /// Today's yearly cost less it.
     pub saving: f64,
+    /// Why it is no fair answer however cheap it is; absent where rooms and water are kept warm.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub leaves_cold: Option<String>,
     /// Where each lever makes it equal today's system, by yearly cost, lifetime cost and carbon.
     pub break_even: Vec<LeverAnswer>,
     /// The SPF at which the bills are equal; absent unless a heat pump stands against a boiler.
@@ -67,29 +72,6 @@ pub struct SpfAnswer {
     pub spf_h4: Option<f64>,
     /// The same as a sentence.
     pub sentence: String,
-}
-
-/// The choice with emitters for one design flow temperature.
-#[derive(Debug, Clone, PartialEq, Serialize)]
-pub struct EmitterAnswer {
-    /// Design flow temperature.
-    pub flow_c: f64,
-    /// Output the emitters need (EN 442, ΔT 50 K), as a multiple of today's.
-    pub times_today_output: f64,
-    /// Whether the machine reaches that flow on the design day.
-    pub reached: bool,
-    /// Yearly cost; absent where the flow is not reached, like what follows.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub cost: Option<f64>,
-    /// Today's yearly cost less it.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub saving: Option<f64>,
-    /// SPF with all auxiliaries.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub spf_h4: Option<f64>,
-    /// Hours short of heat.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub hours_short: Option<f64>,
 }
 
 /// A sweep over sizes.
@@ -166,29 +148,6 @@ pub struct AxisAnswer {
     pub price_unit: Option<String>,
 }
 
-/// One lever from low to high.
-#[derive(Debug, Clone, PartialEq, Serialize)]
-pub struct SwingAnswer {
-    /// The lever.
-    pub lever: String,
-    /// Its unit.
-    pub unit: String,
-    /// Low value.
-    pub low: f64,
-    /// High value.
-    pub high: f64,
-    /// Low value in words.
-    pub low_words: String,
-    /// High value in words.
-    pub high_words: String,
-    /// Yearly saving at the low value.
-    pub saving_at_low: f64,
-    /// Yearly saving at the high value.
-    pub saving_at_high: f64,
-    /// Where the spread is from.
-    pub from: String,
-}
-
 /// What is to be looked at.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Wish {
@@ -232,41 +191,17 @@ fn study(pair: &Pair, wish: &Wish) -> Result<ChoiceStudy, Problems> {
         levers.extend(found.iter().map(|found| lever_answer(found, pair)));
     }
     let [today, choice] = pair.outcomes();
-    let emitters = emitter_sizes(pair)?;
     Ok(ChoiceStudy {
         label: pair.choice().system.label.clone(),
         cost: choice.costs.total,
         saving: today.costs.total - choice.costs.total,
+        leaves_cold: leaves_cold(pair.choice(), choice),
         break_even: levers,
         break_even_spf: spf(pair),
-        emitters: (!emitters.is_empty()).then(|| {
-            let answers = emitters.iter().map(|size| EmitterAnswer {
-                flow_c: size.flow_c,
-                times_today_output: size.times_today,
-                reached: size.year.is_some(),
-                cost: size.year.map(|year| year.cost),
-                saving: size.year.map(|year| year.saving),
-                spf_h4: size.year.and_then(|year| year.spf_h4),
-                hours_short: size.year.map(|year| year.hours_short),
-            });
-            answers.collect()
-        }),
+        emitters: emitters(pair)?,
         sizes: machine_sizes(pair)?.map(|sizes| sizes_answer(pair, &sizes)),
         two_levers: together(pair, wish)?,
-        swings: swings(pair, Measure::YearlyCost)?
-            .iter()
-            .map(|swing| SwingAnswer {
-                lever: swing.lever.name().to_owned(),
-                unit: unit(swing.lever, pair),
-                low: swing.spread.low,
-                high: swing.spread.high,
-                low_words: condition(swing.lever, swing.now, swing.spread.low, pair),
-                high_words: condition(swing.lever, swing.now, swing.spread.high, pair),
-                saving_at_low: swing.at_low,
-                saving_at_high: swing.at_high,
-                from: swing.spread.from.to_owned(),
-            })
-            .collect(),
+        swings: moved(pair)?,
     })
 }
 

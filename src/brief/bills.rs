@@ -231,7 +231,7 @@ fn stated(
         "cold water at the temperature of the ground at 1 m, drawn at 40 °C",
     );
     Some(Stated {
-        efficiency: efficiency?.fraction(),
+        efficiency: efficiency?.of(Fuel::Gas)?.fraction(),
         efficiency_within: within?.fraction(),
         hot_water_share: share?.fraction(),
         hot_water_share_within: share_within?.fraction(),

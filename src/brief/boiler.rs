@@ -6,14 +6,14 @@ use super::notes::Notes;
 use super::raw::{BoilerTable, SystemTable};
 use crate::bounds;
 use crate::document::{Check, Leaf, LeafValue, Section};
-use crate::heater::{Boiler, BoilerEfficiency, Combustion, GrossEfficiency, HybridRule};
+use crate::heater::{Boiler, BoilerEfficiency, Combustion, HybridRule, StatedEfficiency};
 use crate::units::{Fuel, Power, Share, Temperature};
 
 /// The fields that say what a boiler is, wherever they stand.
 struct Fields<'a> {
     fuel: Fuel,
     output: &'a Option<Leaf<Power>>,
-    efficiency: &'a Option<Leaf<GrossEfficiency>>,
+    efficiency: &'a Option<Leaf<StatedEfficiency>>,
     field_factor: &'a Option<Leaf<Share>>,
     fixed_flow: &'a Option<Leaf<Temperature>>,
 }
@@ -137,10 +137,18 @@ fn efficiency(
         );
         return None;
     }
-    if fields.efficiency.is_some() {
-        return check
-            .value(fields.efficiency)
-            .map(BoilerEfficiency::Seasonal);
+    if let Some(leaf) = fields.efficiency {
+        let stated = check.value(fields.efficiency)?;
+        let seasonal = stated.of(fields.fuel);
+        if seasonal.is_none() {
+            check.refuse(
+                &leaf.span(),
+                "an efficiency beyond what this fuel gives",
+                "at most 100 % on gross calorific value",
+                "look at which calorific value the sheet means: \"% gross\" or \"% net\"",
+            );
+        }
+        return seasonal.map(BoilerEfficiency::Seasonal);
     }
     let combustion = match fields.fuel {
         Fuel::Gas => Combustion::GAS,
@@ -158,9 +166,8 @@ fn efficiency(
             }
             notes.used(&defaults::PELLET_EFFICIENCY);
             let default = toml::Value::String(defaults::PELLET_EFFICIENCY.value.to_owned());
-            return GrossEfficiency::read(&default)
-                .ok()
-                .map(BoilerEfficiency::Seasonal);
+            let stated = StatedEfficiency::read(&default).ok()?;
+            return stated.of(fields.fuel).map(BoilerEfficiency::Seasonal);
         }
     };
     let factor = notes.quantity(

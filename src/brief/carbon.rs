@@ -1,14 +1,16 @@
 //! Carbon factors of a brief: a published set, with own figures in place of some of it.
 
+use chrono_tz::Tz;
+
 use super::files::Folder;
 use super::notes::Notes;
 use super::raw::{Energies, HourlyCarbon};
 use crate::bounds;
 use crate::carbon::{Course, Factor, Factors, PUBLISHED, Published, Scope};
 use crate::document::{Check, Leaf, Section};
-use crate::problem::Place;
+use crate::problem::{Finding, Place, Severity};
 use crate::series::{Layout, WithinHour, read_text};
-use crate::units::{CarbonFactor, Fuel};
+use crate::units::{CarbonFactor, Currency, Fuel};
 
 /// The factors of every fuel the set or the brief knows.
 pub(super) fn factors(
@@ -76,6 +78,37 @@ pub(super) fn factors(
         );
     }
     check.take(Factors::new(factors))
+}
+
+/// Says that factors which nobody named are those of the United Kingdom, where currency or clock are of elsewhere.
+pub(super) fn of_another_country(
+    table: &Section<Energies>,
+    currency: Currency,
+    zone: Tz,
+) -> Option<Finding> {
+    /// Clocks of the United Kingdom and of nowhere.
+    const AT_HOME: [&str; 5] = ["Europe/London", "Europe/Belfast", "GB", "GB-Eire", "UTC"];
+    let own_electricity = table.electricity_carbon.is_some()
+        || table.electricity_carbon_by_month.is_some()
+        || table.hourly_carbon.is_some();
+    if table.carbon.is_some() || (own_electricity && table.gas_carbon.is_some()) {
+        return None;
+    }
+    let abroad = currency.code() != "GBP";
+    let clock_abroad = !AT_HOME.contains(&zone.name()) && !zone.name().starts_with("Etc/");
+    (abroad || clock_abroad).then(|| {
+        Finding::new(
+            Severity::Warning,
+            format!(
+                "carbon is counted with the factors of the United Kingdom ({}), the tariffs are in {} and the clock is {}",
+                Published::default_set().source,
+                currency.code(),
+                zone.name()
+            ),
+            "costs do not depend on them; name another set, carbon = \"eu-2023\", or give electricity_carbon, gas_carbon and carbon_scope \
+             of the country under [energy]",
+        )
+    })
 }
 
 fn published(table: &Section<Energies>, check: &mut Check) -> Option<&'static Published> {

@@ -9,7 +9,7 @@ use crate::home::{
     water_flow_l_per_min,
 };
 use crate::problem::{Finding, Severity};
-use crate::units::Area;
+use crate::units::{Area, as_set};
 
 /// A floor that would become too warm to stand on.
 pub(super) fn floor_surface(
@@ -56,9 +56,9 @@ pub(super) fn short_of_load(emitters: &Emitters, own: &Envelope) -> Option<Findi
         Finding::new(
             Severity::Caution,
             format!(
-                "the emitters give {can_kw:.1} kW at their greatest permitted flow of {:.0} °C, {:.1} kW less than the design \
+                "the emitters give {can_kw:.1} kW at their greatest permitted flow of {} °C, {:.1} kW less than the design \
                  heat load",
-                emitters.greatest_flow_c(),
+                as_set(emitters.greatest_flow_c()),
                 load_kw - can_kw
             ),
             "rooms stay cold on the coldest days: larger emitters, a higher greatest_flow or less heat loss is needed",

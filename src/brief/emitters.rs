@@ -13,7 +13,7 @@ use crate::bounds;
 use crate::document::{Check, Leaf, Section};
 use crate::home::{Control, Emitters, Group, MOST_GROUPS, Room, worst_room};
 use crate::problem::Finding;
-use crate::units::{Area, TemperatureDifference, parse};
+use crate::units::{Area, TemperatureDifference, as_set, parse};
 
 /// What emitters are made from.
 pub(super) struct Emitting<'a> {
@@ -236,7 +236,7 @@ impl Water<'_> {
                 let return_c = flow_c - usual_spread_k(flow_c);
                 notes.add(
                     "emitters.return",
-                    format!("{return_c:.0} °C at a flow of {flow_c:.0} °C"),
+                    format!("{} °C at a flow of {} °C", as_set(return_c), as_set(flow_c)),
                     "default: usual spread, common practice, no source",
                 );
                 return_c

@@ -8,7 +8,7 @@ use super::raw::PatternTable;
 use crate::bounds;
 use crate::document::{Check, Leaf, Section};
 use crate::home::{FROST_C, Pattern, WarmUp};
-use crate::units::{Temperature, parse};
+use crate::units::{Temperature, as_set, parse};
 
 /// The pattern of a table, or the same set point day and night where there is none.
 pub(super) fn pattern(
@@ -20,7 +20,7 @@ pub(super) fn pattern(
     let Some(table) = table else {
         notes.add(
             "home.pattern",
-            format!("{indoor_c:.0} °C all day"),
+            format!("{} °C all day", as_set(indoor_c)),
             "no pattern is given",
         );
         return Some(Pattern::continuous(indoor_c));

@@ -8,6 +8,8 @@ use chrono_tz::Tz;
 use schemars::Schema;
 
 use super::bills::{BillsMade, Over, named, of_file};
+use super::carbon::of_another_country;
+use super::design_outdoor::design_beside_weather;
 use super::energy::{Energy, energy};
 use super::files::Folder;
 use super::home::WeatherFacts;
@@ -196,6 +198,17 @@ fn build(raw: &raw::Brief, folder: &Folder, check: &mut Check) -> Option<Brief> 
                 }
             }
         }
+    }
+    if let (Some(first), Some(site)) = (contenders.first(), &site) {
+        let lowest_c = site.outdoor_c.iter().copied().fold(f64::INFINITY, f64::min);
+        findings.extend(design_beside_weather(
+            first.design_outdoor_c,
+            facts.design_c,
+            lowest_c,
+        ));
+    }
+    if let (Some(table), Some(energy), Some(zone)) = (&raw.energy, &energy, zone) {
+        findings.extend(of_another_country(table, energy.currency, zone));
     }
     let told = raw
         .choice

@@ -1,11 +1,12 @@
 //! Cost of a year with its spread: a mark from P10 to P90 for every system, a dot in the middle.
 
-use super::font::{self, Weight};
+use super::font::Weight;
 use super::frame::Axis;
-use super::label::{Anchor, BODY, SMALL, Type};
+use super::label::{SMALL, Type};
 use super::numbers::{Marks, money_unit};
-use super::palette::{AXIS, GRID, INK, MUTED, NAVY, WHITE};
-use super::scene::{MARGIN, Scene};
+use super::palette::{INK, MUTED, NAVY, WHITE};
+use super::rows::{FromTo, RowSizes, Rows};
+use super::scene::Scene;
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "odds of cost";
@@ -32,7 +33,17 @@ pub struct CostSpread {
     pub p90: f64,
 }
 
-const ROW: f64 = 54.0;
+const SIZES: RowSizes = RowSizes {
+    row: 54.0,
+    line: 18.0,
+    left: 22.0,
+};
+const SPREAD: FromTo = FromTo {
+    colour: NAVY,
+    width: 5.0,
+    across: 7.0,
+    end_width: 2.4,
+};
 
 /// Draws the cost of every system with its spread.
 ///
@@ -52,34 +63,13 @@ pub fn cost_odds(data: &CostOdds, marks: &Marks) -> Result<Picture, ChartError> 
     let subtitle =
         "From the line's left to its right end in eight cases of ten; the ring is the middle.";
     let mut scene = Scene::of(marks);
-    let top = scene.heading(title, subtitle) + 6.0;
-    let bottom = top + ROW * data.systems.len() as f64 + 6.0;
-    scene.height = bottom + 52.0;
     let low = all().fold(f64::INFINITY, f64::min);
     let high = all().fold(f64::NEG_INFINITY, f64::max);
-    let axis = Axis::linear(
-        &format!("Cost of a year, {}", money_unit(&data.currency)),
-        low,
-        high,
-        7,
-        marks,
-    );
-    let (left, right) = (MARGIN + 22.0, scene.width - MARGIN - 22.0);
-    let at = |v: f64| left + (v - axis.low) / (axis.high - axis.low) * (right - left);
-    for (value, text) in &axis.ticks {
-        scene.line(&[(at(*value), top), (at(*value), bottom)], GRID, 1.0);
-        scene.tick(text, (at(*value), bottom + 18.0), Anchor::Middle);
-    }
-    scene.line(&[(left, bottom), (right, bottom)], AXIS, 1.2);
-    scene.text(
-        &axis.title,
-        (right, bottom + 38.0),
-        Anchor::End,
-        Type::small(),
-    );
+    let axis = format!("Cost of a year, {}", money_unit(&data.currency));
+    let axis = Axis::linear(&axis, low, high, 7, marks);
+    let count = data.systems.len();
+    let rows = Rows::set(&mut scene, (title, subtitle), axis, count, &SIZES);
     for (i, system) in data.systems.iter().enumerate() {
-        let line = top + ROW * i as f64 + 18.0;
-        let y = line + 20.0;
         let small = Type::new(SMALL, Weight::Regular, MUTED);
         let spread = format!(
             "{} to {}, middle {}",
@@ -87,16 +77,11 @@ pub fn cost_odds(data: &CostOdds, marks: &Marks) -> Result<Picture, ChartError> 
             marks.money(&data.currency, system.p90),
             marks.money(&data.currency, system.p50)
         );
-        let room = scene.width - 2.0 * MARGIN - small.width(&spread) - 28.0;
-        let name = font::fit(named(&system.label), BODY, Weight::Regular, room);
-        scene.plate(&name, (MARGIN, line), Anchor::Start, Type::body());
-        scene.plate(&spread, (scene.width - MARGIN, line), Anchor::End, small);
-        scene.line(&[(at(system.p10), y), (at(system.p90), y)], NAVY, 5.0);
-        for end in [system.p10, system.p90] {
-            scene.line(&[(at(end), y - 7.0), (at(end), y + 7.0)], NAVY, 2.4);
-        }
-        scene.disc((at(system.p50), y), 7.0, INK);
-        scene.disc((at(system.p50), y), 4.0, WHITE);
+        rows.label(&mut scene, i, &system.label, (&spread, small));
+        let y = rows.line(i) + 20.0;
+        rows.extent(&mut scene, (system.p10, system.p90), y, &SPREAD);
+        scene.disc((rows.at(system.p50), y), 7.0, INK);
+        scene.disc((rows.at(system.p50), y), 4.0, WHITE);
     }
     let mut alt = "Cost of a year of every system with its spread.".to_owned();
     for system in &data.systems {

@@ -100,7 +100,7 @@ pub fn emitter_study(data: &EmitterStudy, marks: &Marks) -> Result<Picture, Char
     let titles = [
         format!("Saving in a year, {}", money_unit(&data.currency)),
         "SPF with all auxiliaries (no unit)".to_owned(),
-        "Output the emitters need, times today’s (EN 442, ΔT 50 K)".to_owned(),
+        "Emitters needed, times today’s output at ΔT 50 K".to_owned(),
     ];
     let mut y = top;
     let mut frames = Vec::new();

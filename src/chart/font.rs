@@ -3,6 +3,9 @@
 //! Two weights of one open-licensed family lie in `src/chart/font/` (licence and recipe beside them). They are
 //! compiled in, so a PNG needs no system font, and every SVG carries them as a web font, so it looks the same
 //! wherever it is opened. Widths come from the same files, so a label box is known before anything is drawn.
+//!
+//! They hold Latin, Greek and Cyrillic with their extensions. As web fonts the further letters are files of their own, which a text carries
+//! only where it uses one of them. What they lack is shown by the fonts of whoever opens an SVG or page; a PNG and paper print a mark.
 
 use super::ChartError;
 use ab_glyph::{Font as _, FontRef};
@@ -18,9 +21,15 @@ pub const REGULAR: &[u8] = include_bytes!("font/regular.otf");
 pub const BOLD: &[u8] = include_bytes!("font/bold.otf");
 const REGULAR_WEB: &str = include_str!("font/regular.woff2.base64");
 const BOLD_WEB: &str = include_str!("font/bold.woff2.base64");
+const REGULAR_MORE: &str = include_str!("font/regular-more.woff2.base64");
+const BOLD_MORE: &str = include_str!("font/bold-more.woff2.base64");
+/// Characters of the further files, as the `unicode-range` of CSS.
+const MORE_RANGE: &str = include_str!("font/more-range.txt");
+/// What is printed in place of characters that no font here has.
+pub(crate) const UNPRINTABLE: &str = "[?]";
 
 /// Room kept, in ems, for a character the fonts lack: a viewer's own font will show it in an SVG, about this wide.
-const UNKNOWN_EM: f32 = 1.1;
+const UNKNOWN_EM: f32 = 1.6;
 
 /// Weight of a text.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
@@ -31,15 +40,55 @@ pub enum Weight {
     Bold,
 }
 
-/// The `@font-face` rules for an SVG or a page, fonts included.
-pub fn css() -> String {
-    let face = |weight: &str, data: &str| {
+/// The `@font-face` rules for an SVG or a page that shows `text`, fonts included.
+pub fn css(text: &str) -> String {
+    let face = |weight: &str, data: &str, more: &str| {
         format!(
-            "@font-face{{font-family:\"{FAMILY}\";font-weight:{weight};\
+            "@font-face{{font-family:\"{FAMILY}\";font-weight:{weight};{more}\
              src:url(data:font/woff2;base64,{data}) format(\"woff2\")}}"
         )
     };
-    face("normal", REGULAR_WEB) + &face("bold", BOLD_WEB)
+    let mut css = face("normal", REGULAR_WEB, "") + &face("bold", BOLD_WEB, "");
+    if text.chars().any(is_further) {
+        let range = format!("unicode-range:{MORE_RANGE};");
+        css += &face("normal", REGULAR_MORE, &range);
+        css += &face("bold", BOLD_MORE, &range);
+    }
+    css
+}
+
+/// Whether a character stands in the further files.
+fn is_further(c: char) -> bool {
+    static RANGES: OnceLock<Vec<(u32, u32)>> = OnceLock::new();
+    let ranges = RANGES.get_or_init(|| {
+        let read = |code: &str| u32::from_str_radix(code, 16).ok();
+        let runs = MORE_RANGE.split(',').filter_map(|run| {
+            let run = run.trim().strip_prefix("U+")?;
+            let (low, high) = run.split_once('-').unwrap_or((run, run));
+            Some((read(low)?, read(high)?))
+        });
+        runs.collect()
+    });
+    let code = u32::from(c);
+    ranges
+        .iter()
+        .any(|(low, high)| (*low..=*high).contains(&code))
+}
+
+/// `text` with a mark in place of each run of characters that the font lacks.
+pub(crate) fn printable(text: &str, mark: &str) -> String {
+    let mut out = String::with_capacity(text.len());
+    let mut lacking = false;
+    for c in text.chars() {
+        let lacks = !has(c);
+        if !lacks {
+            out.push(c);
+        } else if !lacking {
+            out.push_str(mark);
+        }
+        lacking = lacks;
+    }
+    out
 }
 
 /// The parsed font of a weight.
@@ -73,7 +122,7 @@ pub(crate) fn advance_em(font: &FontRef<'_>, units_per_em: f32, c: char) -> f32 
     }
 }
 
-/// The glyph and the advance in ems of every character; a sign the font lacks is an open box.
+/// The glyph and the advance in ems of every character of a printable text.
 #[cfg(feature = "pdf")]
 pub(crate) fn glyphs(text: &str, weight: Weight) -> Vec<(u16, f32)> {
     let Ok(font) = face(weight) else {
@@ -81,20 +130,13 @@ pub(crate) fn glyphs(text: &str, weight: Weight) -> Vec<(u16, f32)> {
     };
     let em = font.units_per_em().unwrap_or(1000.0);
     text.chars()
-        .map(|c| {
-            let glyph = match font.glyph_id(c) {
-                id if id.0 == 0 => font.glyph_id('□'),
-                id => id,
-            };
-            (glyph.0, advance_em(font, em, c))
-        })
+        .map(|c| (font.glyph_id(c).0, advance_em(font, em, c)))
         .collect()
 }
 
-/// Whether the font has a sign for `c`.
-#[cfg(feature = "pdf")]
+/// Whether the font has a sign for `c`, or needs none.
 pub(crate) fn has(c: char) -> bool {
-    face(Weight::Regular).is_ok_and(|font| font.glyph_id(c).0 != 0)
+    c.is_whitespace() || face(Weight::Regular).is_ok_and(|font| font.glyph_id(c).0 != 0)
 }
 
 /// `text` as it may be drawn: one line, without control characters, without marks that would turn the reading
@@ -180,6 +222,21 @@ mod tests {
     }
 
     #[test]
+    fn what_the_font_lacks_is_marked_once_a_run() {
+        let text = "Ngôi nhà ấm, θερμό, Жылыту, Ŵyneb";
+        assert_eq!(printable(text, UNPRINTABLE), text);
+        assert_eq!(
+            printable("家 の 中 no. 5", UNPRINTABLE),
+            "[?] [?] [?] no. 5"
+        );
+        assert_eq!(printable("東京home", UNPRINTABLE), "[?]home");
+        assert_eq!(
+            printable("a\u{a0}b\u{202f}c", UNPRINTABLE),
+            "a\u{a0}b\u{202f}c"
+        );
+    }
+
+    #[test]
     fn digits_are_all_as_wide_as_each_other() {
         for weight in [Weight::Regular, Weight::Bold] {
             let one = width("1", 100.0, weight);
@@ -230,9 +287,15 @@ mod tests {
 
     #[test]
     fn css_carries_both_weights() {
-        let css = css();
-        assert_eq!(css.matches("@font-face").count(), 2);
+        let usual = css("Gas boiler, 5 °C, Ж");
+        assert_eq!(usual.matches("@font-face").count(), 2);
         // "wOF2", the signature of the web font format (WOFF2 recommendation, section 4.1), in base64.
-        assert_eq!(css.matches("base64,d09GM").count(), 2);
+        assert_eq!(usual.matches("base64,d09GM").count(), 2);
+        // Vietnamese, polytonic Greek and Kazakh letters need the further files.
+        for letter in ["ệ", "ἀ", "Қ"] {
+            let further = css(letter);
+            assert_eq!(further.matches("@font-face").count(), 4, "{letter}");
+            assert_eq!(further.matches("unicode-range:U+").count(), 2);
+        }
     }
 }

@@ -36,6 +36,7 @@ mod numbers;
 mod paint;
 mod palette;
 mod ramp;
+mod rows;
 mod scene;
 
 mod annual_cost;
@@ -54,6 +55,7 @@ mod demand_and_output;
 mod duration_curve;
 mod emitter_study;
 mod energy_flow;
+mod glance;
 mod load_duration;
 mod machine_performance;
 mod monthly;
@@ -82,8 +84,11 @@ pub use energy_flow::{EnergyFlow, Flow, FlowKind, energy_flow};
 pub use font::clean as plain_line;
 pub use font::{BOLD, FAMILY, FAMILY_STACK, REGULAR, css as font_css};
 #[cfg(feature = "pdf")]
-pub(crate) use font::{Weight, glyphs, has as font_has, width as text_width};
+pub(crate) use font::{
+    UNPRINTABLE, Weight, glyphs, has as font_has, printable, width as text_width,
+};
 pub use geometry::Rect;
+pub use glance::{GLANCE_WIDTH, Glance, GlanceRow, GlanceShape, glance};
 pub use label::Label;
 pub use load_duration::{LoadDuration, load_duration};
 pub use machine_performance::{FlowCurve, MachinePerformance, TestedPoint, machine_performance};

@@ -53,7 +53,8 @@ pub(crate) fn svg(picture: &Picture, with_fonts: bool) -> Result<String, ChartEr
         .replace(" opacity=\"1\"", "")
         .replace(" stroke=\"none\"", "");
     let style = if with_fonts {
-        format!("<style>{}</style>\n", font::css())
+        let texts: String = scene.labels.iter().map(|l| l.text.as_str()).collect();
+        format!("<style>{}</style>\n", font::css(&texts))
     } else {
         String::new()
     };
@@ -228,13 +229,11 @@ impl Output for BitMapBackend<'_> {
         let baseline = (label.at.1 * scale) as f32;
         let colour = rgb(label.colour);
         let (width, height) = self.get_size();
-        for c in label.text.chars() {
-            // A sign the font lacks is an open box: something stands here, and a viewer of the SVG will show it.
-            let shown = match face.glyph_id(c) {
-                id if id.0 == 0 => face.glyph_id('□'),
-                id => id,
-            };
-            let glyph = shown.with_scale_and_position(pixels, point(pen, baseline));
+        // What the font lacks is marked: something stands here, and a viewer of the SVG will show it.
+        for c in font::printable(&label.text, font::UNPRINTABLE).chars() {
+            let glyph = face
+                .glyph_id(c)
+                .with_scale_and_position(pixels, point(pen, baseline));
             pen += font::advance_em(face, em, c) * size;
             let Some(outline) = face.outline_glyph(glyph) else {
                 continue;

@@ -1,11 +1,12 @@
 //! What each choice saves in all samples: one heap a choice over one axis, the zero line through all, the chance beside it.
 
-use super::font::{self, Weight};
+use super::font::Weight;
 use super::frame::Axis;
-use super::label::{Anchor, BODY, Type};
+use super::label::{BODY, Type};
 use super::numbers::{Marks, money_unit};
-use super::palette::{AXIS, CORAL, Colour, GRID, Hatch, INK, NAVY};
-use super::scene::{MARGIN, Scene};
+use super::palette::{AXIS, CORAL, Colour, Hatch, INK, NAVY};
+use super::rows::{RowSizes, Rows};
+use super::scene::Scene;
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "odds of saving";
@@ -26,27 +27,27 @@ pub struct ChoiceSaving {
     pub label: String,
     /// Saving against today in every sample; below zero where the choice is dearer.
     pub saving: Vec<f64>,
-    /// Standard error of the chance of being cheaper, 0 to 1, where it is known.
-    pub chance_error: Option<f64>,
+    /// Chance of being cheaper as it is said, in percent ("48 ± 4", "more than 96"); nothing to have it counted in the samples.
+    pub chance: Option<String>,
 }
 
 impl ChoiceSaving {
-    /// Share of the samples in which it is cheaper.
-    fn chance(&self) -> f64 {
-        let cheaper = self.saving.iter().filter(|saving| **saving > 0.0).count();
-        cheaper as f64 / self.saving.len() as f64
-    }
-
     fn chance_text(&self) -> String {
-        let error = self.chance_error.map_or_else(String::new, |error| {
-            format!(" ± {:.0}", (error * 100.0).max(1.0))
-        });
-        format!("cheaper in {:.0}{error} of 100", self.chance() * 100.0)
+        match &self.chance {
+            Some(said) => format!("cheaper in {said} of 100"),
+            None => {
+                let cheaper = self.saving.iter().filter(|saving| **saving > 0.0).count();
+                format!("cheaper in {cheaper} of {}", self.saving.len())
+            }
+        }
     }
 }
 
-/// Height of a row: name, heap.
-const ROW: f64 = 112.0;
+const SIZES: RowSizes = RowSizes {
+    row: 112.0,
+    line: 20.0,
+    left: 22.0,
+};
 /// Height of the highest heap.
 const HEAP: f64 = 70.0;
 /// Slices of a step of the axis, so that zero lies between two of them.
@@ -70,37 +71,14 @@ pub fn saving_odds(data: &SavingOdds, marks: &Marks) -> Result<Picture, ChartErr
     let title = "How sure the saving is";
     let subtitle = "Saving of a year against today's system in every sample; right of the line the choice is cheaper.";
     let mut scene = Scene::of(marks);
-    let top = scene.heading(title, subtitle) + 6.0;
-    let bottom = top + ROW * data.choices.len() as f64 + 6.0;
-    scene.height = bottom + 52.0;
     let low = all().copied().fold(0.0, f64::min);
     let high = all().copied().fold(0.0, f64::max);
-    let axis = Axis::linear(
-        &format!("Saving of a year, {}", money_unit(&data.currency)),
-        low,
-        high,
-        7,
-        marks,
-    );
-    let (left, right) = (MARGIN + 22.0, scene.width - MARGIN - 22.0);
-    let at = |v: f64| left + (v - axis.low) / (axis.high - axis.low) * (right - left);
-    for (value, text) in &axis.ticks {
-        scene.line(&[(at(*value), top), (at(*value), bottom)], GRID, 1.0);
-        scene.tick(text, (at(*value), bottom + 18.0), Anchor::Middle);
-    }
-    scene.line(&[(left, bottom), (right, bottom)], AXIS, 1.2);
-    scene.text(
-        &axis.title,
-        (right, bottom + 38.0),
-        Anchor::End,
-        Type::small(),
-    );
-    let step = axis
-        .ticks
-        .windows(2)
-        .next()
-        .map_or(1.0, |pair| pair[1].0 - pair[0].0);
-    let slice = step / SLICES;
+    let axis = format!("Saving of a year, {}", money_unit(&data.currency));
+    let axis = Axis::linear(&axis, low, high, 7, marks);
+    let count = data.choices.len();
+    let rows = Rows::set(&mut scene, (title, subtitle), axis, count, &SIZES);
+    let at = |value: f64| rows.at(value);
+    let slice = rows.step() / SLICES;
     let heaps: Vec<Vec<(i64, f64)>> = data
         .choices
         .iter()
@@ -112,7 +90,7 @@ pub fn saving_odds(data: &SavingOdds, marks: &Marks) -> Result<Picture, ChartErr
         .map(|(_, share)| *share)
         .fold(0.0, f64::max);
     for (i, heap) in heaps.iter().enumerate() {
-        let base = top + ROW * (i + 1) as f64;
+        let base = rows.foot(i);
         for (place, share) in heap {
             let (from, to) = (*place as f64 * slice, (*place + 1) as f64 * slice);
             let height = share / highest * HEAP;
@@ -129,17 +107,12 @@ pub fn saving_odds(data: &SavingOdds, marks: &Marks) -> Result<Picture, ChartErr
             ];
             scene.hatched(&corners, look.0, look.1);
         }
-        scene.line(&[(left, base), (right, base)], AXIS, 1.0);
+        scene.line(&[(rows.left, base), (rows.right, base)], AXIS, 1.0);
     }
-    scene.line(&[(at(0.0), top), (at(0.0), bottom)], INK, 1.8);
+    scene.line(&[(at(0.0), rows.top), (at(0.0), rows.bottom)], INK, 1.8);
     for (i, choice) in data.choices.iter().enumerate() {
-        let line = top + ROW * i as f64 + 20.0;
-        let chance = choice.chance_text();
         let bold = Type::new(BODY, Weight::Bold, INK);
-        let room = scene.width - 2.0 * MARGIN - bold.width(&chance) - 28.0;
-        let name = font::fit(named(&choice.label), BODY, Weight::Regular, room);
-        scene.plate(&name, (MARGIN, line), Anchor::Start, Type::body());
-        scene.plate(&chance, (scene.width - MARGIN, line), Anchor::End, bold);
+        rows.label(&mut scene, i, &choice.label, (&choice.chance_text(), bold));
     }
     Ok(Picture::new(title, alt(data, marks), scene))
 }
@@ -182,9 +155,14 @@ mod tests {
         let choice = ChoiceSaving {
             label: "A".into(),
             saving: vec![-5.0, -0.1, 0.1, 4.0],
-            chance_error: Some(0.02),
+            chance: None,
         };
-        assert_eq!(choice.chance_text(), "cheaper in 50 ± 2 of 100");
+        assert_eq!(choice.chance_text(), "cheaper in 2 of 4");
+        let said = ChoiceSaving {
+            chance: Some("more than 96".into()),
+            ..choice.clone()
+        };
+        assert_eq!(said.chance_text(), "cheaper in more than 96 of 100");
         assert_eq!(
             heap(&choice.saving, 4.0),
             [(-2, 0.25), (-1, 0.25), (0, 0.25), (1, 0.25)]

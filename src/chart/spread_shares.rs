@@ -2,10 +2,11 @@
 
 use super::font::{self, Weight};
 use super::frame::Axis;
-use super::label::{Anchor, BODY, Type};
+use super::label::{BODY, Type};
 use super::numbers::Marks;
-use super::palette::{AXIS, GRID, INK, PERIWINKLE};
-use super::scene::{MARGIN, Scene};
+use super::palette::{INK, PERIWINKLE};
+use super::rows::{FromTo, RowSizes, Rows};
+use super::scene::Scene;
 use super::{ChartError, Picture, finite, named};
 
 const PICTURE: &str = "shares of the spread";
@@ -32,7 +33,17 @@ pub struct UnknownShare {
     pub high: f64,
 }
 
-const ROW: f64 = 46.0;
+const SIZES: RowSizes = RowSizes {
+    row: 46.0,
+    line: 18.0,
+    left: 14.0,
+};
+const LIMITS: FromTo = FromTo {
+    colour: INK,
+    width: 2.0,
+    across: 4.0,
+    end_width: 2.0,
+};
 
 /// Draws the shares, ranked.
 ///
@@ -59,48 +70,24 @@ pub fn spread_shares(data: &SpreadShares, marks: &Marks) -> Result<Picture, Char
     );
     let subtitle = format!("{outcome}: share of its spread that knowing one thing takes away.");
     let mut scene = Scene::of(marks);
-    let top = scene.heading(title, &subtitle) + 6.0;
-    let bottom = top + ROW * unknowns.len() as f64 + 6.0;
-    scene.height = bottom + 52.0;
     let highest = all().fold(0.05, f64::max) * 100.0;
     let axis = Axis::linear("Share of the spread, %", 0.0, highest, 6, marks);
-    let (left, right) = (MARGIN + 14.0, scene.width - MARGIN - 22.0);
-    let at =
-        |share: f64| left + (share * 100.0 - axis.low) / (axis.high - axis.low) * (right - left);
-    for (value, text) in &axis.ticks {
-        let x = at(value / 100.0);
-        scene.line(&[(x, top), (x, bottom)], GRID, 1.0);
-        scene.tick(text, (x, bottom + 18.0), Anchor::Middle);
-    }
-    scene.line(&[(left, bottom), (right, bottom)], AXIS, 1.2);
-    scene.text(
-        &axis.title,
-        (right, bottom + 38.0),
-        Anchor::End,
-        Type::small(),
-    );
+    let rows = Rows::set(&mut scene, (title, &subtitle), axis, unknowns.len(), &SIZES);
     for (i, unknown) in unknowns.iter().enumerate() {
-        let line = top + ROW * i as f64 + 18.0;
-        let (first, last) = (line + 8.0, line + 20.0);
-        let figure = figure(unknown);
         let bold = Type::new(BODY, Weight::Bold, INK);
-        let room = scene.width - 2.0 * MARGIN - bold.width(&figure) - 28.0;
-        let name = font::fit(named(&unknown.label), BODY, Weight::Regular, room);
-        scene.plate(&name, (MARGIN, line), Anchor::Start, Type::body());
-        scene.plate(&figure, (scene.width - MARGIN, line), Anchor::End, bold);
+        rows.label(&mut scene, i, &unknown.label, (&figure(unknown), bold));
+        let (first, last) = (rows.line(i) + 8.0, rows.line(i) + 20.0);
+        let end = rows.at(unknown.share * 100.0);
         let corners = [
-            (left, first),
-            (at(unknown.share), first),
-            (at(unknown.share), last),
-            (left, last),
+            (rows.left, first),
+            (end, first),
+            (end, last),
+            (rows.left, last),
         ];
         scene.area(&corners, PERIWINKLE, 1.0);
         scene.outline(&corners, INK, 1.2);
-        let y = (first + last) / 2.0;
-        scene.line(&[(at(unknown.low), y), (at(unknown.high), y)], INK, 2.0);
-        for end in [unknown.low, unknown.high] {
-            scene.line(&[(at(end), y - 4.0), (at(end), y + 4.0)], INK, 2.0);
-        }
+        let limits = (unknown.low * 100.0, unknown.high * 100.0);
+        rows.extent(&mut scene, limits, (first + last) / 2.0, &LIMITS);
     }
     let mut alt = format!(
         "{}: what makes its spread, the greatest share first.",

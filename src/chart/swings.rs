@@ -47,6 +47,7 @@ impl Swing {
 const ROW: f64 = 50.0;
 /// Room kept beside the axis for what the ends are.
 const SIDE: f64 = 120.0;
+const SIDE_NARROW: f64 = 62.0;
 
 /// Draws the swings.
 ///
@@ -90,10 +91,11 @@ pub fn swings(data: &Swings, marks: &Marks) -> Result<Picture, ChartError> {
         &format!("Outcome, {}", money_unit(&data.currency)),
         low,
         high,
-        6,
+        if scene.narrow() { 4 } else { 6 },
         marks,
     );
-    let (left, right) = (MARGIN + SIDE, scene.width - MARGIN - SIDE);
+    let side = if scene.narrow() { SIDE_NARROW } else { SIDE };
+    let (left, right) = (MARGIN + side, scene.width - MARGIN - side);
     let at = |v: f64| left + (v - axis.low) / (axis.high - axis.low) * (right - left);
 
     for (value, text) in &axis.ticks {

@@ -2,12 +2,11 @@
 
 use std::path::PathBuf;
 
-use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
+use super::{Failure, Format, picture_file, print, print_json, warn, write_files};
 use crate::answer::bills::BillsAnswer;
 use crate::brief::Brief;
 use crate::chart::Marks;
 use crate::report::signature_picture;
-use crate::signature::Signature;
 
 /// The heat loss at which the home of a brief uses what was metered, and a straight line through the readings.
 ///
@@ -49,10 +48,8 @@ pub struct Args {
 pub fn run(args: &Args) -> Result<(), Failure> {
     let (bills, assumptions) = Brief::bills(&args.file, &args.brief)?;
     if let Some(path) = &args.chart {
-        write_files(
-            &[NewFile::new(path.clone(), picture(path, &bills.signature)?)],
-            args.force,
-        )?;
+        let drawn = signature_picture(&bills.signature, &Marks::default());
+        write_files(&[picture_file("--chart", path, drawn)?], args.force)?;
     }
     warn(&bills.findings);
     let answer = BillsAnswer::new(
@@ -65,33 +62,6 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     match args.format {
         Format::Json => print_json(&answer),
         Format::Text => print(&text(&answer)),
-    }
-}
-
-fn picture(path: &std::path::Path, signature: &Signature) -> Result<Vec<u8>, Failure> {
-    let cannot = |reason: &dyn std::fmt::Display| Failure::Write {
-        path: path.to_owned(),
-        reason: reason.to_string(),
-    };
-    let picture =
-        signature_picture(signature, &Marks::default()).map_err(|error| cannot(&error))?;
-    let is = |wanted: &str| {
-        path.extension()
-            .is_some_and(|extension| extension.eq_ignore_ascii_case(wanted))
-    };
-    if is("svg") {
-        picture
-            .svg()
-            .map(String::into_bytes)
-            .map_err(|error| cannot(&error))
-    } else if is("png") {
-        picture.png().map_err(|error| cannot(&error))
-    } else {
-        Err(Failure::argument(
-            "--chart",
-            path.display().to_string(),
-            "a file name that ends in .svg or .png",
-        ))
     }
 }
 

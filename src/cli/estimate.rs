@@ -5,18 +5,19 @@ use std::path::{Path, PathBuf};
 
 use super::progress::Progress;
 use super::sampling::draw;
-use super::{Failure, Format, NewFile, check_folder, print, print_json, warn, write_files};
+use super::{
+    Failure, Format, NewFile, check_folder, picture_files, print, print_json, warn_in, write_files,
+};
 use crate::answer::odds::summary;
-use crate::answer::{Estimate, compare_patterns, compose};
+use crate::answer::{Estimate, compare_patterns, compose, what_if};
 use crate::brief::{Brief, DEFAULTS};
-use crate::chart::ChartError;
 use crate::home::Pattern;
-use crate::locale::Marks;
+use crate::locale::Locale;
 use crate::problem::Problems;
 #[cfg(feature = "pdf")]
 use crate::report::report_pdf;
 use crate::report::{
-    Drawn, Material, accounts_text, estimate_text, home_text, ledger_csv, odds_pictures,
+    Material, accounts_text, estimate_text, home_text, in_front, ledger_csv, odds_pictures,
     patterns_text, pictures, report_html,
 };
 use crate::study::odds::{Sample, Sampler};
@@ -66,9 +67,13 @@ pub struct Args {
     /// Also run every system all day at its set point beside a set-back.
     #[arg(long)]
     patterns: bool,
-    /// Samples for the odds of every choice, in blocks of 20; 0 leaves them out. `odds` draws more and says what to find out.
+    /// Samples for the odds of every choice, in blocks of 5; 0 leaves them out. `odds` draws more and says what to find out.
     #[arg(long, default_value_t = 80, value_parser = clap::value_parser!(u32).range(0..=100_000))]
     samples: u32,
+    /// Run weather of less than a year all the same: figures of these days, with no word of a year; DIR then gets ledgers and
+    /// result.json only.
+    #[arg(long)]
+    part_year: bool,
     /// Print every default with its source, and stop.
     #[arg(long)]
     show_defaults: bool,
@@ -90,6 +95,11 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         Some(path) => Brief::read(path)?,
         None => Brief::demonstration()?,
     };
+    let days = brief.days_of_a_part_year().filter(|_| args.part_year);
+    let brief = match days {
+        Some(_) => brief,
+        None => brief.of_a_year("; --part-year runs these days without a word of a year")?,
+    };
     if let Some(folder) = &args.out {
         check_folder(folder, ALWAYS, args.force)?;
     }
@@ -107,15 +117,24 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     }
     progress.at("break-even");
     let mut estimate = compose(&brief.case, &outcomes, &brief.told)?;
-    let sampled = sampled(&brief, args.samples as usize)?;
+    if let Some(days) = days {
+        estimate = estimate.of_days(days);
+    }
+    let samples = if days.is_some() { 0 } else { args.samples };
+    let sampled = sampled(&brief, samples as usize)?;
     estimate.odds = sampled
         .as_ref()
-        .and_then(|(sampler, blocks)| summary(&brief.case, sampler, blocks));
+        .and_then(|(sampler, blocks)| summary(&brief.case, &outcomes, sampler, blocks));
     if args.bills {
         estimate = estimate.with_bills(&brief.case, &outcomes)?;
     }
     if args.patterns {
         estimate.patterns = compare_patterns(&brief.case, &usual_pattern())?;
+    }
+    if args.out.is_some() || matches!(args.format, Format::Json) {
+        progress.at("what would change it");
+        let choices = in_front(&estimate).into_iter().filter(|place| *place > 0);
+        estimate.what_if = what_if(&brief.case, &outcomes, &choices.collect::<Vec<_>>())?;
     }
     if let Some(folder) = &args.out {
         progress.at("pictures and report");
@@ -133,11 +152,11 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         write_files(&files, args.force)?;
     }
     progress.done();
-    warn(&estimate.findings);
+    warn_in(&estimate.findings, &brief.locale, &estimate.currency);
     match args.format {
         Format::Json => print_json(&estimate),
         Format::Text => {
-            let mut text = text(&estimate, &brief.locale.marks, args);
+            let mut text = text(&estimate, &brief.locale, args);
             if args.bills {
                 text += &format!("\n\n{}", accounts(&estimate, &brief, &outcomes)?);
             }
@@ -152,7 +171,7 @@ type Sampled = (Sampler, Vec<Vec<Sample>>);
 /// A modest sample for the odds of every choice; nothing where none was wished for.
 fn sampled(brief: &Brief, samples: usize) -> Result<Option<Sampled>, Problems> {
     /// Samples of a block.
-    const BLOCK: usize = 20;
+    const BLOCK: usize = 5;
     /// The same seed as that of `odds`; the same estimate gives the same bytes.
     const SEED: u64 = 1;
     if samples == 0 || brief.case.contenders.len() < 2 {
@@ -190,22 +209,22 @@ fn files(
         let name = format!("ledger-{}-{label}.csv", i + 1);
         files.push(NewFile::new(folder.join(name), content));
     }
+    if material.estimate.weather.part_year_days.is_some() {
+        return Ok(files);
+    }
+    let shown = in_front(material.estimate);
     let mut drawn = pictures(material)?;
     if let Some(blocks) = samples {
-        drawn.extend(odds_pictures(case, blocks, &material.locale)?);
+        drawn.extend(odds_pictures(case, blocks, &shown, &material.locale)?);
     }
-    for (drawn, png) in drawn.iter().zip(pngs(&drawn)?) {
-        let path = |ending: &str| folder.join(format!("{}.{ending}", drawn.name));
-        files.push(NewFile::new(path("svg"), drawn.picture.svg()?));
-        files.push(NewFile::new(path("png"), png));
-    }
+    files.extend(picture_files(folder, &drawn)?);
     let locale = material.locale.on_a_phone();
     let mut phone = pictures(&Material {
         locale,
         ..*material
     })?;
     if let Some(blocks) = samples {
-        phone.extend(odds_pictures(case, blocks, &locale)?);
+        phone.extend(odds_pictures(case, blocks, &shown, &locale)?);
     }
     let page = report_html(material, &drawn, &phone)?;
     files.push(NewFile::new(folder.join(REPORT), page));
@@ -217,8 +236,8 @@ fn files(
     Ok(files)
 }
 
-fn text(estimate: &Estimate, marks: &Marks, args: &Args) -> String {
-    let mut text = estimate_text(estimate, marks, args.assumptions);
+fn text(estimate: &Estimate, locale: &Locale, args: &Args) -> String {
+    let mut text = estimate_text(estimate, locale, args.assumptions);
     if args.home {
         text += &format!("\n\n{}", home_text(estimate));
     }
@@ -239,24 +258,6 @@ fn usual_pattern() -> Pattern {
         pattern.weekend_c[hour] = if (7..23).contains(&hour) { 20.0 } else { 16.0 };
     }
     pattern
-}
-
-/// The pictures as PNG, painted side by side: at print resolution that is the longest part of the work.
-fn pngs(drawn: &[Drawn]) -> Result<Vec<Vec<u8>>, ChartError> {
-    let hands = std::thread::available_parallelism().map_or(1, usize::from);
-    let share = drawn.len().div_ceil(hands).max(1);
-    let painted = std::thread::scope(|scope| {
-        let workers: Vec<_> = drawn
-            .chunks(share)
-            .map(|part| scope.spawn(|| part.iter().map(|d| d.picture.png()).collect::<Vec<_>>()))
-            .collect();
-        let done = workers.into_iter().map(|worker| worker.join());
-        done.collect::<Result<Vec<_>, _>>()
-    });
-    match painted {
-        Ok(parts) => parts.into_iter().flatten().collect(),
-        Err(_) => Err(ChartError::Drawing("a picture was not finished".into())),
-    }
 }
 
 fn cannot_write(folder: &std::path::Path, error: &dyn Error) -> Failure {

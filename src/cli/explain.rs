@@ -4,7 +4,7 @@ use std::path::PathBuf;
 
 use chrono::{NaiveDateTime, Timelike as _};
 
-use super::{Failure, Format, print, print_json};
+use super::{Failure, Format, print, print_json, warn};
 use crate::answer::explain::Explanation;
 use crate::brief::Brief;
 use crate::problem::{Place, Problem};
@@ -64,6 +64,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
         Which { .. } => Wanted::Dearest,
     };
     let explanation = Explanation::of(&case, contender, &trace(&case, contender, wanted)?);
+    warn(&explanation.findings);
     match args.format {
         Format::Json => print_json(&explanation),
         Format::Text => print(&explain_text(&explanation)),

@@ -8,6 +8,7 @@ use tempfile::NamedTempFile;
 
 use super::Failure;
 use crate::chart::{ChartError, Picture};
+use crate::report::Drawn;
 
 /// A file to be written.
 #[derive(Debug)]
@@ -85,6 +86,38 @@ fn readable(file: &NamedTempFile) -> std::io::Result<()> {
 #[cfg(not(unix))]
 fn readable(_: &NamedTempFile) -> std::io::Result<()> {
     Ok(())
+}
+
+/// Pictures as SVG and PNG in a folder.
+///
+/// # Errors
+/// When one cannot be painted.
+pub fn picture_files(folder: &Path, drawn: &[Drawn]) -> Result<Vec<NewFile>, ChartError> {
+    let mut files = Vec::with_capacity(2 * drawn.len());
+    for (drawn, png) in drawn.iter().zip(pngs(drawn)?) {
+        let path = |ending: &str| folder.join(format!("{}.{ending}", drawn.name));
+        files.push(NewFile::new(path("svg"), drawn.picture.svg()?));
+        files.push(NewFile::new(path("png"), png));
+    }
+    Ok(files)
+}
+
+/// The pictures as PNG, painted side by side: at print resolution that is the longest part of the work.
+fn pngs(drawn: &[Drawn]) -> Result<Vec<Vec<u8>>, ChartError> {
+    let hands = std::thread::available_parallelism().map_or(1, usize::from);
+    let share = drawn.len().div_ceil(hands).max(1);
+    let painted = std::thread::scope(|scope| {
+        let workers: Vec<_> = drawn
+            .chunks(share)
+            .map(|part| scope.spawn(|| part.iter().map(|d| d.picture.png()).collect::<Vec<_>>()))
+            .collect();
+        let done = workers.into_iter().map(|worker| worker.join());
+        done.collect::<Result<Vec<_>, _>>()
+    });
+    match painted {
+        Ok(parts) => parts.into_iter().flatten().collect(),
+        Err(_) => Err(ChartError::Drawing("a picture was not finished".into())),
+    }
 }
 
 /// A picture as a file, SVG or PNG by its ending; `option` is the argument that named it.

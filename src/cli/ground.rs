@@ -74,7 +74,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
             FLOOR_C.words(),
         ));
     }
-    let brief = Brief::read(&args.brief)?;
+    let brief = Brief::read(&args.brief)?.of_a_year("")?;
     let case = &brief.case;
     let chosen = chosen(case, args)?;
     let mut answers = Vec::new();

@@ -29,8 +29,8 @@ use std::process::ExitCode;
 use clap::{Parser, Subcommand};
 
 pub use failure::Failure;
-pub use files::{NewFile, check_folder, picture_file, write_files};
-pub use output::{Format, print, print_json, warn};
+pub use files::{NewFile, check_folder, picture_file, picture_files, write_files};
+pub use output::{Format, print, print_json, warn, warn_in};
 
 /// What a heat pump would cost to run in one home, hour by hour, beside the gas boiler.
 #[derive(Debug, Parser)]

@@ -6,6 +6,7 @@ use clap::ValueEnum;
 use serde::Serialize;
 
 use super::Failure;
+use crate::locale::Locale;
 use crate::problem::Finding;
 
 /// How a result is printed.
@@ -47,6 +48,19 @@ pub fn print_json<T: Serialize>(value: &T) -> Result<(), Failure> {
         reason: error.to_string(),
     })?;
     print(&text)
+}
+
+/// Prints findings to stderr, the gravest first, in the form of a place: its marks, dates and currency.
+pub fn warn_in(findings: &[Finding], locale: &Locale, currency: &str) {
+    let told: Vec<Finding> = findings
+        .iter()
+        .map(|finding| Finding {
+            what: locale.told(&finding.what, currency),
+            done: locale.told(&finding.done, currency),
+            ..finding.clone()
+        })
+        .collect();
+    warn(&told);
 }
 
 /// Prints findings to stderr, the gravest first.

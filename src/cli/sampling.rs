@@ -9,7 +9,10 @@ use crate::problem::Problems;
 use crate::study::odds::{Chance, Sample, Sampler};
 
 /// Fewest blocks whose scatter is taken for an error.
-const LEAST_BLOCKS: usize = 4;
+const LEAST_BLOCKS: usize = 8;
+/// Samples that are drawn side by side, in whole blocks, so that small blocks keep many cores busy. The number is fixed: where it stops
+/// must not depend on the machine.
+const TOGETHER: usize = 100;
 
 /// Whether somebody has asked to stop, by Ctrl-C or as a system ends a program.
 pub(super) struct Stop(Arc<AtomicBool>);
@@ -44,7 +47,7 @@ pub(super) struct Drawing {
 }
 
 /// Draws blocks until there are enough, every chance against today's system is known to `precision` (a fraction), or somebody asks
-/// to stop: then the block that was begun is finished, since only whole blocks are fair.
+/// to stop: then the blocks that were begun are finished, since only whole blocks are fair.
 pub(super) fn draw(
     sampler: &Sampler,
     most: usize,
@@ -58,14 +61,16 @@ pub(super) fn draw(
     );
     let mut blocks: Vec<Vec<Sample>> = Vec::with_capacity(most);
     let mut interrupted = false;
-    for block in 0..most {
+    let together = (TOGETHER / sampler.points()).max(1);
+    while blocks.len() < most {
         interrupted = !blocks.is_empty() && stop.is_some_and(Stop::asked);
         let enough = precision.is_some_and(|precision| is_precise(&blocks, precision));
         if interrupted || enough {
             break;
         }
-        blocks.push(sampler.block(block)?);
-        progress.inc(1);
+        let next = blocks.len()..most.min(blocks.len() + together);
+        blocks.extend(sampler.blocks(next)?);
+        progress.set_position(blocks.len() as u64);
     }
     progress.finish_and_clear();
     Ok(Drawing {
@@ -92,7 +97,8 @@ fn is_precise(blocks: &[Vec<Sample>], precision: f64) -> bool {
             })
             .collect();
         let chance = Chance::of(saving.iter().map(Vec::as_slice), |saving| saving > 0.0);
-        chance.map_or(f64::INFINITY, |chance| chance.error)
+        let error = chance.and_then(|chance| chance.error);
+        error.unwrap_or(f64::INFINITY)
     };
     blocks.len() >= LEAST_BLOCKS && (1..systems).all(|place| error(place) <= precision)
 }

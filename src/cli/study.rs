@@ -2,16 +2,12 @@
 
 use std::path::{Path, PathBuf};
 
-use super::{Failure, Format, NewFile, print, print_json, warn, write_files};
-use crate::answer::lifetime::LifetimeAnswer;
-use crate::answer::study::{AxisAnswer, ChoiceStudy, StudyAnswer, TwoLeversAnswer, Wish, studies};
+use super::{Failure, Format, NewFile, picture_files, print, print_json, warn_in, write_files};
+use crate::answer::study::{StudyAnswer, Wish, studies};
 use crate::brief::Brief;
-use crate::chart::{
-    ChartError, Contours, CumulativeSpend, EmitterStep, EmitterStudy, Marks, Picture, Swing,
-    Swings, SystemSpend, contours, cumulative_spend, emitter_study, swings,
-};
+use crate::locale::Marks;
 use crate::problem::{Place, Problem, Problems};
-use crate::report::study_text;
+use crate::report::{study_pictures, study_text};
 use crate::study::{Case, Lever};
 
 /// Values of each of two prices moved together.
@@ -65,7 +61,7 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     let over = problems.take(lever("--over", &args.over));
     let against = problems.take(lever("--against", &args.against));
     let brief = match &args.brief {
-        Some(path) => problems.take(Brief::read(path)),
+        Some(path) => problems.take(Brief::read(path).and_then(|brief| brief.of_a_year(""))),
         None => problems.take(Brief::demonstration()),
     };
     let choices = brief
@@ -90,12 +86,13 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     let outcomes = brief.case.run()?;
     let answer = studies(&brief.case, &outcomes, &brief.told, &wish)?;
     if let Some(folder) = &args.out {
-        write_files(&files(&answer, folder)?, args.force)?;
+        let files = files(&answer, folder, &brief.locale.marks)?;
+        write_files(&files, args.force)?;
     }
-    warn(&answer.findings);
+    warn_in(&answer.findings, &brief.locale, &answer.currency);
     match args.format {
         Format::Json => print_json(&answer),
-        Format::Text => print(&study_text(&answer)),
+        Format::Text => print(&study_text(&answer, &brief.locale)),
     }
 }
 
@@ -141,161 +138,14 @@ fn choices(case: &Case, label: Option<&str>) -> Result<Vec<usize>, Problems> {
     Ok(found)
 }
 
-fn files(answer: &StudyAnswer, folder: &Path) -> Result<Vec<NewFile>, Failure> {
+fn files(answer: &StudyAnswer, folder: &Path, marks: &Marks) -> Result<Vec<NewFile>, Failure> {
     let cannot = |error: &dyn std::fmt::Display| Failure::Write {
         path: folder.to_owned(),
         reason: error.to_string(),
     };
     let json = serde_json::to_vec_pretty(answer).map_err(|error| cannot(&error))?;
+    let drawn = study_pictures(answer, marks).map_err(|error| cannot(&error))?;
     let mut files = vec![NewFile::new(folder.join("study.json"), json)];
-    let mut add = |name: String, picture: Result<Picture, ChartError>| -> Result<(), Failure> {
-        let picture = picture.map_err(|error| cannot(&error))?;
-        let svg = picture.svg().map_err(|error| cannot(&error))?;
-        let png = picture.png().map_err(|error| cannot(&error))?;
-        files.push(NewFile::new(folder.join(format!("{name}.svg")), svg));
-        files.push(NewFile::new(folder.join(format!("{name}.png")), png));
-        Ok(())
-    };
-    let marks = Marks::default();
-    for (i, choice) in answer.choices.iter().enumerate() {
-        let number = i + 1;
-        if let Some(data) = emitters(choice, &answer.currency) {
-            add(format!("emitters-{number}"), emitter_study(&data, &marks))?;
-        }
-        let data = two_levers(choice, &answer.currency);
-        add(format!("two-levers-{number}"), contours(&data, &marks))?;
-        if !choice.swings.is_empty() {
-            add(
-                format!("swings-{number}"),
-                swings(&moved(choice, &answer.currency), &marks),
-            )?;
-        }
-    }
-    if let Some(lifetime) = &answer.lifetime {
-        add(
-            "spend".to_owned(),
-            cumulative_spend(&spend(lifetime, &answer.currency), &marks),
-        )?;
-    }
+    files.extend(picture_files(folder, &drawn).map_err(|error| cannot(&error))?);
     Ok(files)
-}
-
-fn emitters(choice: &ChoiceStudy, currency: &str) -> Option<EmitterStudy> {
-    let steps = choice.emitters.as_ref()?;
-    let flow = choice.break_even.iter().find(|lever| {
-        lever.lever == Lever::FlowTemperature.name() && lever.measure == "yearly cost"
-    });
-    Some(EmitterStudy {
-        choice: choice.label.clone(),
-        currency: currency.to_owned(),
-        steps: steps
-            .iter()
-            .map(|step| EmitterStep {
-                flow_c: step.flow_c,
-                times_today: step.times_today_output,
-                saving: step.saving,
-                spf_h4: step.spf_h4,
-            })
-            .collect(),
-        now_c: flow.map(|flow| flow.now),
-        crossings_c: flow.map_or_else(Vec::new, |flow| flow.values.clone()),
-    })
-}
-
-fn two_levers(choice: &ChoiceStudy, currency: &str) -> Contours {
-    let TwoLeversAnswer { x, y, saving } = &choice.two_levers;
-    // Two prices are drawn as prices, so that lines of constant ratio mean something.
-    let prices = x
-        .price_now
-        .zip(y.price_now)
-        .filter(|(x, y)| *x > 0.0 && *y > 0.0);
-    let scale = |axis: &AxisAnswer, price: Option<f64>| {
-        let factor = price.unwrap_or(1.0);
-        let values: Vec<f64> = axis.values.iter().map(|value| value * factor).collect();
-        let unit = axis
-            .price_unit
-            .as_ref()
-            .filter(|_| price.is_some())
-            .unwrap_or(&axis.unit)
-            .clone();
-        (
-            values,
-            axis.now * factor,
-            (sentence_case(&axis.lever), unit),
-        )
-    };
-    let (x_values, x_now, x_name) = scale(x, prices.map(|prices| prices.0));
-    let (y_values, y_now, y_name) = scale(y, prices.map(|prices| prices.1));
-    let electricity_along_x = x.lever == Lever::ElectricityRate.name();
-    Contours {
-        outcome: format!("Saving in a year of {}", choice.label),
-        currency: currency.to_owned(),
-        x_name,
-        y_name,
-        x: x_values,
-        y: y_values,
-        values: saving.clone(),
-        now: Some((x_now, y_now)),
-        ratios: prices
-            .filter(|_| electricity_along_x)
-            .map_or_else(Vec::new, |_| vec![2.0, 3.0, 4.0, 5.0]),
-    }
-}
-
-fn moved(choice: &ChoiceStudy, currency: &str) -> Swings {
-    Swings {
-        outcome: format!("Saving in a year of {}", choice.label),
-        currency: currency.to_owned(),
-        likely: choice.saving,
-        levers: choice
-            .swings
-            .iter()
-            .map(|swing| Swing {
-                label: sentence_case(&swing.lever),
-                low_text: end_text(swing.low, &swing.unit),
-                high_text: end_text(swing.high, &swing.unit),
-                low: swing.saving_at_low,
-                high: swing.saving_at_high,
-            })
-            .collect(),
-    }
-}
-
-/// The end of a swing as it stands in a picture: "× 0.8", "46 °C".
-fn end_text(value: f64, unit: &str) -> String {
-    match unit {
-        "× today's" => format!("× {value:.2}"),
-        "" => format!("{:.0} %", value * 100.0),
-        _ => format!("{value:.0} {unit}"),
-    }
-}
-
-fn spend(lifetime: &LifetimeAnswer, currency: &str) -> CumulativeSpend {
-    CumulativeSpend {
-        currency: currency.to_owned(),
-        terms: format!(
-            "real, discounted at {:.1} % a year",
-            lifetime.discount_rate * 100.0
-        ),
-        systems: lifetime
-            .systems
-            .iter()
-            .map(|system| SystemSpend {
-                label: system.label.clone(),
-                today: system.today,
-                spent: system
-                    .by_year
-                    .iter()
-                    .map(|year| year.spent_so_far_discounted)
-                    .collect(),
-            })
-            .collect(),
-    }
-}
-
-fn sentence_case(text: &str) -> String {
-    let mut letters = text.chars();
-    letters.next().map_or_else(String::new, |first| {
-        first.to_uppercase().chain(letters).collect()
-    })
 }

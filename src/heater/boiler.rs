@@ -5,7 +5,7 @@ use super::flue::Combustion;
 use crate::fault::{self, Fault};
 use crate::units::Fuel;
 
-/// Flue gas leaves this much warmer than the water comes back, K: 2 to 10 K, methods §6 \[from memory\].
+/// Flue gas leaves this much warmer than the water comes back, K: 2 to 10 K \[from memory\].
 const FLUE_APPROACH_K: f64 = 5.0;
 
 /// Return to a boiler while it makes hot water, °C. Common practice, no source.
@@ -14,21 +14,21 @@ const WATER_RETURN_C: f64 = 55.0;
 /// What a boiler keeps in a home of its ideal flue efficiency: casing, cycling and purge stand between.
 ///
 /// The published field figure of boilers that do not heat water as it is drawn is 85.3 % gross, of all 82.5 % and more
-/// \[methods §6, from memory\], where the ideal curve at the return temperatures of such homes (about 45 to 50 °C) gives 0.915:
+/// \[from memory\], where the ideal curve at the return temperatures of such homes (about 45 to 50 °C) gives 0.915:
 /// 0.84 / 0.915 = 0.92.
 pub const FIELD_FACTOR: f64 = 0.92;
 
 /// What is kept besides when hot water is heated as it is drawn: every draw starts a cold heat exchanger.
 ///
-/// Of the published field figures (methods §6, from memory) 82.5 % is with and 85.3 % without water heated as drawn. With a
+/// Of the published field figures \[from memory\] 82.5 % is with and 85.3 % without water heated as drawn. With a
 /// fifth of the heat going to hot water, 1/0.825 = 0.8/0.853 + 0.2/η gives η = 0.73 for the water, which is 0.89 of
 /// 0.92 × 0.886, the field factor times the ideal efficiency at 60 °C.
 pub const DRAWN_WATER_FACTOR: f64 = 0.89;
 
 /// Electricity of pump and fan per kilowatt-hour of heat.
 ///
-/// 130 + 45 kWh a year (methods §6) in a home that takes 11 500 kWh of gas (methods §7) at 85 %: 175 / 9775. Taken for
-/// every fuel; what feeds pellets or atomises oil is not known here.
+/// 130 + 45 kWh a year of pump and fan (published field figure, secondary source) in a home that takes 11 500 kWh of gas (typical use
+/// of the British cap, 2026) at 85 %: 175 / 9775. Taken for every fuel; what feeds pellets or atomises oil is not known here.
 const ELECTRICITY_PER_HEAT: f64 = 175.0 / 9775.0;
 
 /// How a boiler's efficiency is known.
@@ -126,7 +126,7 @@ mod tests {
         Boiler::new(Fuel::Gas, 24.0, efficiency)
     }
 
-    /// Published field efficiencies: combi 82.5 %, regular 85.3 % gross \[methods §6, from memory\].
+    /// Published field efficiencies: combi 82.5 %, regular 85.3 % gross \[from memory\].
     #[test]
     fn a_boiler_in_a_home_lands_among_published_field_figures() {
         let typical = in_a_home().gross_efficiency(47.0);

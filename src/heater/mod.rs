@@ -6,6 +6,6 @@ mod flue;
 mod share;
 
 pub use boiler::{Boiler, BoilerEfficiency, DRAWN_WATER_FACTOR, FIELD_FACTOR};
-pub use efficiency::{GrossEfficiency, NET_PER_GROSS_METHANE};
+pub use efficiency::{GrossEfficiency, StatedEfficiency};
 pub use flue::Combustion;
 pub use share::{Effort, HybridRule, Side};

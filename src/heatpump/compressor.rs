@@ -1,7 +1,7 @@
 //! The compressor: how much it moves and what it takes, and how fast the controller lets it turn.
 
 /// Volumetric efficiency of a scroll at a pressure ratio tending to zero and its fall per unit of ratio: 118 tests with
-/// R134a (Cuevas and Lebrun, about 2010; methods §13).
+/// R134a (Cuevas and Lebrun, about 2010).
 const VOLUMETRIC: (f64, f64) = (1.026, 0.0202);
 
 /// Relative speed (1 = greatest at the reference source temperature) at which an inverter compressor is most
@@ -29,7 +29,7 @@ impl Compressor {
     /// Isentropic efficiency at a pressure ratio (given as its logarithm) and a relative speed.
     ///
     /// `η = ηp (1 − s (n − 0.65)²) / (1 + f ln²(r/rp))`: one peak at the built-in ratio, falling to both sides, the shape
-    /// of the published scroll tests (methods §13: peak 72 % at ratio 2.5 to 2.6).
+    /// of the published scroll tests (the same: peak 72 % at ratio 2.5 to 2.6).
     pub fn isentropic_efficiency(&self, ratio_logarithm: f64, speed: f64) -> f64 {
         let away = ratio_logarithm - self.peak_ratio.ln();
         let faster = speed - BEST_SPEED;
@@ -38,7 +38,7 @@ impl Compressor {
         self.peak_efficiency * at_speed / (1.0 + self.falloff * away * away)
     }
 
-    /// Volumetric efficiency at a pressure ratio: linear (methods §13), from 1.0 at 1.3 to 0.83 at 9.7.
+    /// Volumetric efficiency at a pressure ratio: linear, from 1.0 at 1.3 to 0.83 at 9.7.
     pub fn volumetric_efficiency(&self, ratio: f64) -> f64 {
         (VOLUMETRIC.0 - VOLUMETRIC.1 * ratio).max(0.3)
     }
@@ -52,7 +52,7 @@ pub const SPEED_REFERENCE_FLOW_C: f64 = 35.0;
 /// What speeds the controller allows.
 ///
 /// Inverter machines run faster in the cold, and controllers let them speed up to hold the output when the flow is hot: the
-/// greatest speed is not one number (methods §13).
+/// greatest speed is not one number (common practice, no source).
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub enum Speeds {
     /// On or off.
@@ -120,7 +120,7 @@ mod tests {
         drive_efficiency: 1.0,
     };
 
-    /// methods §13: scroll with R134a, peak 72 % at ratio 2.5–2.6; volumetric 1.0 at 1.3 and 0.83 at 9.7 \[read\]; overall
+    /// Cuevas and Lebrun, about 2010: scroll with R134a, peak 72 % at ratio 2.5–2.6; volumetric 1.0 at 1.3 and 0.83 at 9.7 \[read\]; overall
     /// 0.60–0.72 at ratio 3–4 and 0.5–0.6 at 6–8 \[from memory\].
     #[test]
     fn the_published_shape_is_met() {

@@ -20,7 +20,7 @@ use crate::problem::{Finding, Problems, Severity};
 use crate::refrigerant::{Equation, PropertyError, Refrigerant, Saturation, StatePoint};
 
 /// Discharge above this, °C, is more than oil and windings stand (common practice, no source).
-const HOT_DISCHARGE_C: f64 = 120.0;
+pub(super) const HOT_DISCHARGE_C: f64 = 120.0;
 /// Standard atmosphere, kPa.
 const ATMOSPHERE_KPA: f64 = 101.325;
 

@@ -3,22 +3,33 @@
 //! Limits, frost, cycling and the source's fall meet here, around look-ups in the map. Nothing is allocated and no power is
 //! raised; what is computed per hour is a handful of look-ups and, in damp cold, a few exponentials.
 
+use super::balance::{Balance, Next};
 use super::duty::{ColdSide, Delivered, Duty, Flags};
+use super::frost::LEAST_LEFT;
 use super::heat_pump::HeatPump;
-use super::part_load::{running_rise_k, start_up_loss_kw, starts_per_hour};
-use super::steady::{Held, Secant, Steady, Wanted};
+use super::part_load::{rise_per_share_k, running_rise_k, start_up_loss_kw, starts_per_hour};
+use super::steady::{Held, Place, Steady, Wanted};
+use crate::extremes::{greater, lesser};
 use crate::fault::{self, Fault};
 
-/// Change of the running flow temperature below which its substitution ends, K (3e-6 of the electricity), and the most substitutions.
-const RISE_TOLERANCE_K: f64 = 1e-4;
+/// Change of the running flow temperature below which its search ends, K: what a Newton step that short leaves is less than 1e-4 K, 3e-6
+/// of the electricity.
+const RISE_STEP_K: f64 = 0.01;
+/// Change of the share that frost leaves of the output below which the search ends: 1e-4 K of a rise of 10 K.
+const LEFT_TOLERANCE: f64 = 1e-5;
+/// A Newton step is at most as long as if this share of a change of flow were left by its feedback.
+const LEAST_STIFFNESS: f64 = 0.5;
+/// Most steps of either.
 const MOST_RISE_STEPS: usize = 30;
+/// A flow asked this much above the highest is the highest, K: rounding.
+const ROUNDING_K: f64 = 1e-6;
 /// Difference of wanted and greatest heat that is no shortfall, relative: rounding.
 const ENOUGH: f64 = 1e-9;
 
 impl HeatPump {
     /// What the machine does with an hour.
     ///
-    /// Outside its limits it stands, or gives what it can below its highest flow temperature. Where what it draws would bring the
+    /// Outside its limits it stands, and where a flow above its highest is asked. Where what it draws would bring the
     /// source below its lowest, it turns down to what the source bears, and stands when that is less than its least. Between its least and greatest
     /// output it runs all the time at the heat wanted; below it goes on and off at a hotter flow; a block at full output runs
     /// until it is done. Frost (outdoor air only) follows coil temperature and humidity; without humidity the air is that of the
@@ -34,13 +45,12 @@ impl HeatPump {
             return Delivered::standing(flags);
         }
         let highest_c = core.limits.highest_flow_at(cold.open_c);
-        flags.capped_flow = duty.flow_c > highest_c;
-        let lifted = share_below(highest_c, duty);
-        if lifted <= 0.0 {
+        if duty.flow_c > highest_c + ROUNDING_K {
+            flags.too_hot = true;
             return Delivered::standing(flags);
         }
-        let flow_c = duty.flow_c.min(highest_c);
-        let wanted_kw = duty.heat_kw * lifted / self.scale;
+        let flow_c = lesser(duty.flow_c, highest_c);
+        let wanted_kw = duty.heat_kw / self.scale;
         let moisture = self.moisture(cold);
 
         let wanted = if duty.at_full_output {
@@ -50,27 +60,35 @@ impl HeatPump {
         };
         let on_and_off = OnAndOff {
             pump: self,
+            cold,
+            moisture,
             spread_k: duty.spread_k,
             wanted_kw,
             flow_c,
             highest_c,
         };
-        // Where neither frost nor a falling source comes into it, the map's least output alone tells that it goes on and off.
-        let plain = moisture == 0.0 && cold.k_per_kw == 0.0 && !duty.at_full_output;
-        let (mut steady, flow_c, mut share) =
-            if plain && wanted_kw < self.least_kw_at(cold.open_c, flow_c) {
-                on_and_off.on_the_map(cold)
-            } else {
-                let steady = self.steady(cold, flow_c, wanted, moisture);
+        let first = self.begin(cold, flow_c, wanted);
+        // Far below the least output it goes on and off, whatever frost and the source's fall do.
+        let frosty_left = if moisture > 0.0 { LEAST_LEFT } else { 1.0 };
+        let surely = !duty.at_full_output && wanted_kw < first.range.least_kw * frosty_left;
+        let going_on_and_off = surely.then(|| on_and_off.from(&first, 1.0));
+        let (mut steady, flow_c, mut share) = match going_on_and_off {
+            Some(found) if found.2 < 1.0 => found,
+            _ => {
+                let steady = self.balanced(cold, first, flow_c, wanted, moisture);
                 match steady.held {
                     Held::Between => (steady, flow_c, 1.0),
-                    Held::AtLeast => on_and_off.from(steady, cold, moisture),
+                    Held::AtLeast => {
+                        let place = self.place(steady.source_c, flow_c);
+                        on_and_off.from(&place, 1.0 - steady.loss.output)
+                    }
                     Held::AtGreatest => {
                         flags.short = wanted_kw > steady.net_kw() * (1.0 + ENOUGH);
-                        (steady, flow_c, (wanted_kw / steady.net_kw()).min(1.0))
+                        (steady, flow_c, lesser(wanted_kw / steady.net_kw(), 1.0))
                     }
                 }
-            };
+            }
+        };
         if steady.source_c < core.limits.lowest_source_c {
             let Some(held) = self.turned_down(cold, flow_c, moisture) else {
                 flags.stopped = true;
@@ -78,7 +96,7 @@ impl HeatPump {
             };
             flags.turned_down = true;
             flags.short = wanted_kw > held.net_kw() * (1.0 + ENOUGH);
-            share = (wanted_kw / held.net_kw()).min(1.0);
+            share = lesser(wanted_kw / held.net_kw(), 1.0);
             steady = held;
         }
         flags.cycling = share < 1.0 && !duty.at_full_output;
@@ -108,6 +126,7 @@ impl HeatPump {
     }
 
     /// Adds an hour up from its steady machine.
+    #[inline]
     fn account(
         &self,
         duty: &Duty,
@@ -155,10 +174,11 @@ impl HeatPump {
     }
 }
 
-/// A machine that goes on and off because its least output at a flow temperature is more than is wanted. Its ways give the machine
-/// while running, its flow temperature then and the share of the time that it runs.
+/// A machine that goes on and off because its least output at a flow temperature is more than is wanted.
 struct OnAndOff<'a> {
     pump: &'a HeatPump,
+    cold: &'a ColdSide,
+    moisture: f64,
     spread_k: f64,
     wanted_kw: f64,
     /// Flow temperature that running all the time would need, °C.
@@ -167,60 +187,66 @@ struct OnAndOff<'a> {
 }
 
 impl OnAndOff<'_> {
-    /// Without frost and with a source that does not fall.
-    fn on_the_map(&self, cold: &ColdSide) -> (Steady, f64, f64) {
-        let running_c = self.running_c(cold.open_c, 1.0, self.flow_c);
-        let least = self.pump.steady(cold, running_c, Wanted::Least, 0.0);
-        (least, running_c, self.share(least.net_kw()))
+    /// The machine while running, its flow temperature then and the share of the time that it runs, sought from its place when running
+    /// all the time and the share that frost leaves of the output.
+    ///
+    /// Source and frost hardly move with the flow: the map's output alone leads to the flow, then they follow.
+    fn from(&self, place: &Place<'_>, mut left: f64) -> (Steady, f64, f64) {
+        let mut balance = Balance::new(self.pump, self.cold);
+        let mut source_c = place.source_c;
+        let mut running_c = self.stepped(place, left, self.flow_c).0;
+        let mut steps = 0;
+        loop {
+            let place = self.settled(source_c, left, &mut running_c);
+            let least = self.pump.steady_at(&place, Wanted::Least, self.moisture);
+            let next_left = 1.0 - least.loss.output;
+            steps += 1;
+            match balance.next(&least, running_c) {
+                Next::At(next_c) if steps < MOST_RISE_STEPS => source_c = next_c,
+                Next::Found(least, running_c)
+                    if (next_left - left).abs() < LEFT_TOLERANCE || steps == MOST_RISE_STEPS =>
+                {
+                    return (least, running_c, self.share(least.net_kw()));
+                }
+                Next::At(_) => return (least, running_c, self.share(least.net_kw())),
+                Next::Found(..) => {}
+            }
+            left = next_left;
+        }
     }
 
-    /// From the machine at its least output at the flow temperature that running all the time would need.
-    fn from(&self, mut least: Steady, cold: &ColdSide, moisture: f64) -> (Steady, f64, f64) {
-        let mut running_c = self.flow_c;
+    /// The place at the flow temperature while running, with the source and the share of output that frost leaves as they are, sought
+    /// from a guess by Newton's steps.
+    #[inline]
+    fn settled(&self, source_c: f64, left: f64, running_c: &mut f64) -> Place<'_> {
+        let mut place = self.pump.place(source_c, *running_c);
         for _ in 0..MOST_RISE_STEPS {
-            // Frost and the source's fall hardly move with the flow: first to where the map's output alone leads, then they.
-            let next_c = self.running_c(least.source_c, 1.0 - least.loss.output, running_c);
-            if (next_c - running_c).abs() < RISE_TOLERANCE_K {
+            let (next_c, enough) = self.stepped(&place, left, *running_c);
+            *running_c = next_c;
+            place = self.pump.place(source_c, next_c);
+            if enough {
                 break;
             }
-            running_c = next_c;
-            least = self.pump.steady(cold, running_c, Wanted::Least, moisture);
         }
-        (least, running_c, self.share(least.net_kw()))
+        place
     }
 
-    /// Flow temperature while running with the source and the share of output that frost leaves as they are, °C, sought from a guess.
-    fn running_c(&self, source_c: f64, left: f64, guess_c: f64) -> f64 {
-        let mut secant = Secant::default();
-        let mut running_c = guess_c;
-        for _ in 0..MOST_RISE_STEPS {
-            let least_kw = self.pump.least_kw_at(source_c, running_c) * left;
-            let hotter_c = self.flow_c + running_rise_k(self.spread_k, self.share(least_kw));
-            let change_k = hotter_c.min(self.highest_c) - running_c;
-            if change_k.abs() < RISE_TOLERANCE_K {
-                break;
-            }
-            running_c = secant
-                .next(running_c, change_k)
-                .clamp(self.flow_c, self.highest_c);
-        }
-        running_c
+    /// A Newton step from a place towards the flow temperature while running, and whether it was the last that is needed.
+    #[inline]
+    fn stepped(&self, place: &Place<'_>, left: f64, running_c: f64) -> (f64, bool) {
+        let least_kw = place.range.least_kw;
+        let share = self.share(least_kw * left);
+        let rise_k = running_rise_k(self.spread_k, share);
+        // Of a change of flow this share comes back as a change of the rise.
+        let feedback =
+            -rise_per_share_k(self.spread_k, share) * share * place.least_kw_per_k() / least_kw;
+        let step_k = (self.flow_c + rise_k - running_c) / greater(1.0 - feedback, LEAST_STIFFNESS);
+        let next_c = greater(lesser(running_c + step_k, self.highest_c), self.flow_c);
+        (next_c, (next_c - running_c).abs() < RISE_STEP_K)
     }
 
     /// Share of the time that it runs.
     fn share(&self, least_kw: f64) -> f64 {
-        (self.wanted_kw / least_kw).min(1.0)
+        lesser(self.wanted_kw / least_kw, 1.0)
     }
-}
-
-/// Share of the heat wanted that lies below a highest flow temperature: the machine warms the return up to there, and backup lifts
-/// the rest.
-fn share_below(highest_c: f64, duty: &Duty) -> f64 {
-    if duty.flow_c <= highest_c {
-        return 1.0;
-    }
-    if duty.spread_k <= 0.0 {
-        return 0.0;
-    }
-    (1.0 - (duty.flow_c - highest_c) / duty.spread_k).max(0.0)
 }

@@ -29,8 +29,8 @@ pub struct Duty {
 /// What happened in an hour that is worth counting.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
 pub struct Flags {
-    /// The flow needed is above the machine's highest: it gave what it could below that.
-    pub capped_flow: bool,
+    /// The flow asked is above the machine's highest: it stood.
+    pub too_hot: bool,
     /// The source is outside the machine's limits: it stood.
     pub stopped: bool,
     /// It gave less than it could, so that its source would not fall below its lowest.

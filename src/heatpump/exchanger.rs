@@ -10,7 +10,7 @@
 /// **Spread.** The water's flow rate is taken as that of the tested points (5 K at 35 °C to 10 K at 65 °C at full output); a home with
 /// another design spread has another. By the effectiveness relation, with the same UA: 6 kW at 5 K spread and 1.8 K approach is NTU
 /// 1.33; at 8 K spread NTU is 2.13 and the approach 1.1 K, at 3 K spread 0.80 and 2.5 K. Condensing is then 0.7 K lower or higher, 1.5 %
-/// of COP at 2 to 2.5 % a kelvin (methods §2), less because UA itself rises with the flow. Left out: a sheet does not say how its
+/// of COP at 2 to 2.5 % a kelvin (Staffell et al. 2012, doi 10.1039/c2ee22653g), less because UA itself rises with the flow. Left out: a sheet does not say how its
 /// condenser splits, and the flow temperature, which is met exactly, weighs ten times as much.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Exchanger {
@@ -33,7 +33,7 @@ impl Exchanger {
 mod tests {
     use super::*;
 
-    /// methods §13 \[from memory\]: typical approach 7–12 K at an air coil at full load.
+    /// \[From memory\]: typical approach 7–12 K at an air coil at full load.
     #[test]
     fn approach_grows_from_its_floor_in_proportion_to_heat() {
         let coil = Exchanger {

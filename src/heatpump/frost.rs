@@ -6,24 +6,27 @@
 //! contain defrost, scales both losses.
 
 use crate::air::{MoistAir, SEA_LEVEL_PA, humidity_ratio_at_station, humidity_ratio_over_ice};
+use crate::extremes::lesser;
 
 /// Heat of sublimation of ice at 0 °C, kJ/kg (handbook value 2834).
 pub const SUBLIMATION_KJ_PER_KG: f64 = 2834.0;
 /// Specific heat of moist air, kJ/(kg K); handbook value.
 pub const AIR_KJ_PER_KG_K: f64 = 1.006;
 /// How far the coil's surface stands towards the refrigerant, as a share of the approach. With 9 K of approach frost
-/// begins at about +5 °C, where it begins in maritime air (methods §9, common practice).
+/// begins at about +5 °C, where it begins in maritime air (common practice, no source).
 pub const SURFACE_SHARE: f64 = 0.6;
 /// Below this surface temperature the whole coil frosts, °C; between it and 0 °C part of it stays wet: `x² (3 − 2x)` of it frosts at
 /// the share x of the way. Common practice, no source.
 pub const FULL_GROWTH_C: f64 = -4.0;
 /// Loss of output over loss of COP: the US test procedure's 35 °F point has capacity 0.90 and power 0.985 of the
-/// frost-free line, so COP 0.914 (methods §9, \[from memory\]).
+/// frost-free line, so COP 0.914 \[from memory\].
 pub const OUTPUT_OVER_COP: f64 = 0.100 / 0.086;
 /// Largest loss of COP, a share: a coil that frosts faster than this defrosts out of turn.
 pub const GREATEST_LOSS: f64 = 0.35;
-/// Wet-bulb depression of the standard rating conditions of outdoor air, K: 7(6), 2(1), −7(−8) °C dry (wet) bulb (EN 14511,
-/// methods §1). It stands in where the weather has no humidity.
+/// Share of the output that any frost leaves.
+pub(super) const LEAST_LEFT: f64 = 1.0 - GREATEST_LOSS * OUTPUT_OVER_COP;
+/// Wet-bulb depression of the standard rating conditions of outdoor air, K: 7(6), 2(1), −7(−8) °C dry (wet) bulb (EN 14511).
+/// It stands in where the weather has no humidity.
 const STANDARD_DEPRESSION_K: f64 = 1.0;
 
 /// How strongly a machine's output and COP suffer from frost.
@@ -74,6 +77,7 @@ pub fn frost_free_above_c(largest_approach_k: f64) -> f64 {
 
 impl Frost {
     /// Loss at an outdoor temperature, an evaporating temperature and a humidity ratio of the outdoor air (kg/kg).
+    #[inline]
     pub fn loss(&self, outdoor_c: f64, evaporating_c: f64, humidity_ratio: f64) -> FrostLoss {
         let surface_c = surface_c(outdoor_c, evaporating_c);
         if surface_c >= 0.0 {
@@ -91,6 +95,7 @@ impl Frost {
         )
     }
 
+    #[inline]
     fn growth(&self, outdoor_c: f64, surface_c: f64, humidity_ratio: f64) -> FrostSteps {
         let ramp = (surface_c / FULL_GROWTH_C).clamp(0.0, 1.0);
         let frosted_share = ramp * ramp * (3.0 - 2.0 * ramp);
@@ -103,7 +108,7 @@ impl Frost {
             outdoor_c - surface_c,
             humidity_ratio - surface_humidity_ratio,
         );
-        let cop = (self.strength * frosted_share * latent_share).min(GREATEST_LOSS);
+        let cop = lesser(self.strength * frosted_share * latent_share, GREATEST_LOSS);
         FrostSteps {
             surface_c,
             surface_humidity_ratio,
@@ -169,7 +174,7 @@ mod tests {
     use proptest::prelude::*;
 
     const TYPICAL: Frost = Frost { strength: 0.3 };
-    /// Approach of an air coil at full load, K (methods §13: 7–12).
+    /// Approach of an air coil at full load, K (7–12 \[from memory\]).
     const APPROACH_K: f64 = 9.0;
 
     fn damp(outdoor_c: f64, relative_humidity: f64) -> FrostLoss {
@@ -196,7 +201,7 @@ mod tests {
         (-15.0, 0.000_570_9),
     ];
 
-    /// methods §9: about 9 % of COP at 35 °F in the US procedure \[from memory\]; worst near 0 °C, frequent from −12 to −1 °C,
+    /// About 9 % of COP at 35 °F in the US procedure \[from memory\]; worst near 0 °C, frequent from −12 to −1 °C,
     /// in maritime air from about +5 °C down, fading in dry cold.
     #[test]
     fn frost_is_worst_near_freezing_and_fades_in_dry_cold() {

@@ -14,8 +14,8 @@ use crate::bounds::FIELD_FACTOR;
 use crate::problem::{Finding, Severity};
 use crate::refrigerant::Refrigerant;
 
-/// Allowance from laboratory to home: the field-correction factor of Ruhnau et al. 2019, doi 10.1038/s41597-019-0199-y
-/// (methods §2). Electricity is divided by it, as a component of its own.
+/// Allowance from laboratory to home: the field-correction factor of Ruhnau et al. 2019, doi 10.1038/s41597-019-0199-y.
+/// Electricity is divided by it, as a component of its own.
 pub const USUAL_FIELD_FACTOR: f64 = 0.85;
 
 /// A heat pump, immutable and shared between threads.

@@ -1,6 +1,6 @@
 //! What a machine takes when it does not heat.
 
-/// Standby power measured on a unit of 5 kW, W (methods §13): scaled with output where a sheet says nothing.
+/// Standby power measured on a unit of 5 kW, W (published measurement): scaled with output where a sheet says nothing.
 const MEASURED_STANDBY_W: f64 = 31.0;
 /// Output of that unit, kW.
 const MEASURED_OUTPUT_KW: f64 = 5.0;
@@ -19,7 +19,7 @@ pub struct IdlePower {
 }
 
 impl IdlePower {
-    /// Powers for a machine of an output whose sheet states none: the measured standby power of methods §13 in every mode,
+    /// Powers for a machine of an output whose sheet states none: the standby power measured on a unit of 5 kW in every mode,
     /// the crankcase heater contained in it.
     pub fn usual(output_kw: f64) -> Self {
         let standby_kw = MEASURED_STANDBY_W / 1000.0 * output_kw / MEASURED_OUTPUT_KW;
@@ -46,7 +46,7 @@ impl IdlePower {
 mod tests {
     use super::*;
 
-    /// methods §13: standby 31 W, a 5 kW unit.
+    /// Published measurement: standby 31 W, a 5 kW unit.
     #[test]
     fn usual_standby_is_the_measured_one() {
         assert!((IdlePower::usual(5.0).standby_kw - 0.031).abs() < 1e-12);

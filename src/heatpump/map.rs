@@ -15,6 +15,7 @@ pub use difference::{COLD_AIR_K, COLD_GROUND_K, HIGH_LIFT_K, SheetDoubts};
 pub use error::MapError;
 
 use super::limits::{LEAST_DIFFERENCE_K, Limits};
+use crate::extremes::{greater, lesser};
 
 /// Output range at a condition.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -34,14 +35,24 @@ pub struct Input {
     pub speed_share: f64,
 }
 
+/// Steps from least to greatest output.
+const FRACTION_STEPS: usize = 24;
+
+/// The machine at one source and one flow temperature.
+#[derive(Debug, Clone, PartialEq)]
+struct Node {
+    range: Range,
+    /// Inputs from least to greatest output, evenly spaced.
+    inputs: [Input; FRACTION_STEPS + 1],
+}
+
 /// Surfaces of one machine.
 #[derive(Debug, Clone)]
 pub struct Map {
     source: Axis,
     flow: Axis,
-    fraction: Axis,
-    ranges: Vec<Range>,
-    inputs: Vec<Input>,
+    /// By source temperature, and for each of these by flow temperature.
+    nodes: Vec<Node>,
 }
 
 /// Evenly spaced nodes, two at least.
@@ -50,100 +61,114 @@ struct Axis {
     low: f64,
     step: f64,
     count: usize,
+    /// Nodes a unit: the inverse of the step.
+    per_step: f64,
+    /// The last node that has another after it.
+    last: f64,
 }
 
 impl Axis {
+    fn new(low: f64, step: f64, count: usize) -> Self {
+        Self {
+            low,
+            step,
+            count,
+            per_step: 1.0 / step,
+            last: count.saturating_sub(2) as f64,
+        }
+    }
+
     fn node(&self, i: usize) -> f64 {
         self.low + self.step * i as f64
     }
 
-    /// The node below and the share of the way to the next; the ends hold beyond them.
+    /// The node below and the share of the way to the next; the ends hold beyond them, and NaN is at the low one.
+    #[inline]
     fn place(&self, at: f64) -> (usize, f64) {
-        let last = self.count.saturating_sub(2) as u32;
-        let steps = (at - self.low) / self.step;
-        // Below the axis and NaN become 0.
-        let below = (steps as u32).min(last);
-        (below as usize, (steps - f64::from(below)).clamp(0.0, 1.0))
+        let (below, share) = cell((at - self.low) * self.per_step, self.last);
+        (below as usize, share)
     }
+}
+
+/// The cell, from 0 to `last`, that a number of steps falls into, and the share of it.
+#[inline]
+fn cell(steps: f64, last: f64) -> (u32, f64) {
+    let below = lesser(last, steps) as u32;
+    let share = greater(steps - f64::from(below), 0.0);
+    (below, lesser(share, 1.0))
 }
 
 /// A place in a map: the four nodes about a condition and their weights. An hour asks several outputs at one place.
 pub(super) struct Spot<'a> {
-    fraction: &'a Axis,
-    /// Inputs over the fraction at the cooler and at the warmer source, each with the cooler and the hotter flow one after the other.
-    rows: [&'a [Input]; 2],
-    /// Weights of the same four.
-    weights: [[f64; 2]; 2],
+    /// Cooler source with cooler and hotter flow, warmer source with the same.
+    nodes: [&'a Node; 4],
+    weights: [f64; 4],
     /// Greatest and least output, kW.
     pub range: Range,
+    /// Inverse of the step in flow temperature, 1/K.
+    per_flow_k: f64,
 }
 
 impl Spot<'_> {
     /// Input at a fraction of the way from least to greatest output.
+    #[inline]
     pub fn input(&self, fraction: f64) -> Input {
-        let n = self.fraction.count;
-        let (k, x) = self.fraction.place(fraction);
-        let mut input = Input {
-            electric_per_heat: 0.0,
-            speed_share: 0.0,
-        };
-        for (row, weights) in self.rows.iter().zip(self.weights) {
-            for (from, w) in [k, k + n].into_iter().zip(weights) {
-                // Always there: a place is within its axis.
-                let Some([low, high]) = row.get(from..from + 2) else {
-                    continue;
-                };
-                let (below, above) = (w * (1.0 - x), w * x);
-                input.electric_per_heat +=
-                    below * low.electric_per_heat + above * high.electric_per_heat;
-                input.speed_share += below * low.speed_share + above * high.speed_share;
-            }
+        let (k, x) = cell(
+            fraction * FRACTION_STEPS as f64,
+            (FRACTION_STEPS - 1) as f64,
+        );
+        let k = (k as usize).min(FRACTION_STEPS - 1);
+        let (mut electric_per_heat, mut speed_share) = (0.0, 0.0);
+        for (node, w) in self.nodes.iter().zip(self.weights) {
+            let (low, high) = (node.inputs[k], node.inputs[k + 1]);
+            let between = |low: f64, high: f64| w * (low + x * (high - low));
+            electric_per_heat += between(low.electric_per_heat, high.electric_per_heat);
+            speed_share += between(low.speed_share, high.speed_share);
         }
-        input
+        Input {
+            electric_per_heat,
+            speed_share,
+        }
+    }
+
+    /// How the least output changes with flow temperature at this source, kW/K.
+    #[inline]
+    pub fn least_kw_per_k(&self) -> f64 {
+        let [a, b, c, d] = self.nodes.map(|node| node.range.least_kw);
+        let [wa, wb, wc, wd] = self.weights;
+        ((wa + wb) * (b - a) + (wc + wd) * (d - c)) * self.per_flow_k
     }
 }
 
 impl Map {
     /// A condition's place in the map, from which range and inputs are read.
+    #[inline]
     pub(super) fn spot(&self, source_c: f64, flow_c: f64) -> Spot<'_> {
-        let (at, weights) = self.place(source_c, flow_c);
-        let n = self.fraction.count;
-        Spot {
-            fraction: &self.fraction,
-            rows: at.map(|node| &self.inputs[node * n..(node + 2) * n]),
-            weights,
-            range: self.range_at(at, weights),
-        }
-    }
-
-    /// The node with the cooler flow at the cooler and at the warmer source, and the weights of these and of their hotter
-    /// neighbours.
-    fn place(&self, source_c: f64, flow_c: f64) -> ([usize; 2], [[f64; 2]; 2]) {
         let (i, s) = self.source.place(source_c);
         let (j, f) = self.flow.place(flow_c);
         let at = i * self.flow.count + j;
-        let weights = [1.0 - s, s].map(|w| [w * (1.0 - f), w * f]);
-        ([at, at + self.flow.count], weights)
-    }
-
-    fn range_at(&self, at: [usize; 2], weights: [[f64; 2]; 2]) -> Range {
-        let mut range = Range {
-            greatest_kw: 0.0,
-            least_kw: 0.0,
-        };
-        for (node, [w, v]) in at.into_iter().zip(weights) {
-            if let Some([cooler, hotter]) = self.ranges.get(node..node + 2) {
-                range.greatest_kw += w * cooler.greatest_kw + v * hotter.greatest_kw;
-                range.least_kw += w * cooler.least_kw + v * hotter.least_kw;
-            }
+        let next = at + self.flow.count;
+        let nodes = [at, at + 1, next, next + 1].map(|node| &self.nodes[node]);
+        let weights = [(1.0 - s) * (1.0 - f), (1.0 - s) * f, s * (1.0 - f), s * f];
+        let (mut greatest_kw, mut least_kw) = (0.0, 0.0);
+        for (node, w) in nodes.into_iter().zip(weights) {
+            greatest_kw += w * node.range.greatest_kw;
+            least_kw += w * node.range.least_kw;
         }
-        range
+        Spot {
+            nodes,
+            weights,
+            range: Range {
+                greatest_kw,
+                least_kw,
+            },
+            per_flow_k: self.flow.per_step,
+        }
     }
 
     /// Greatest and least output at a condition, kW.
     pub fn range(&self, source_c: f64, flow_c: f64) -> Range {
-        let (at, weights) = self.place(source_c, flow_c);
-        self.range_at(at, weights)
+        self.spot(source_c, flow_c).range
     }
 
     /// Input at a fraction of the way from least to greatest output.
@@ -153,15 +178,14 @@ impl Map {
 
     /// Greatest output anywhere, kW.
     pub(super) fn greatest_output_kw(&self) -> f64 {
-        let outputs = self.ranges.iter().map(|range| range.greatest_kw);
+        let outputs = self.nodes.iter().map(|node| node.range.greatest_kw);
         outputs.fold(0.0, f64::max)
     }
 
     /// Whether the frost-free COP falls with flow and rises with source temperature at every fraction, over the limits.
     pub fn is_monotone(&self, limits: &Limits) -> bool {
-        let n = self.fraction.count;
         let value = |i: usize, j: usize, k: usize| {
-            self.inputs[(i * self.flow.count + j) * n + k].electric_per_heat
+            self.nodes[i * self.flow.count + j].inputs[k].electric_per_heat
         };
         let inside = |i: usize, j: usize| {
             let (source_c, flow_c) = (self.source.node(i), self.flow.node(j));
@@ -169,7 +193,7 @@ impl Map {
         };
         (0..self.source.count).all(|i| {
             (0..self.flow.count).filter(|&j| inside(i, j)).all(|j| {
-                (0..n).all(|k| {
+                (0..=FRACTION_STEPS).all(|k| {
                     let here = value(i, j, k);
                     let hotter =
                         j + 1 >= self.flow.count || !inside(i, j + 1) || value(i, j + 1, k) > here;
@@ -189,11 +213,7 @@ mod tests {
 
     #[test]
     fn an_axis_holds_its_ends() {
-        let axis = Axis {
-            low: -20.0,
-            step: 1.0,
-            count: 56,
-        };
+        let axis = Axis::new(-20.0, 1.0, 56);
         assert_eq!(axis.place(-30.0), (0, 0.0));
         assert_eq!(axis.place(40.0), (54, 1.0));
         assert_eq!(axis.place(-19.5), (0, 0.5));

@@ -5,10 +5,12 @@
 //! answers each hour ([`HeatPump::deliver`]): limits, frost, part load and cycling, the source's fall, the allowance from bench to
 //! home. [`HeatPump::explain`] solves an hour again without the map. [`rating`] makes seasonal figures by the bin method.
 
+mod balance;
 mod compressor;
 mod correction;
 pub mod cycle;
 mod deliver;
+mod discharge;
 mod doubted;
 mod duty;
 mod exact;

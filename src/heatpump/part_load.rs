@@ -1,5 +1,6 @@
 //! Running below the least output: on and off.
 
+use crate::extremes::{greater, lesser};
 use crate::fault::{self, Fault};
 
 /// Most starts an hour that a controller allows, once at half load; common practice, no source.
@@ -11,7 +12,7 @@ const WIDEST_SPREAD_K: f64 = 10.0;
 /// How much hotter the flow is while running than it would be running all the time at the same heat, K.
 ///
 /// The water keeps its flow rate, so its spread grows from `spread_k` (at the mean load) to `spread_k / share` while running, and
-/// the flow is hotter by the running spread × (1 − share): 0.31 at a running spread of 5 K is 3.45 K (methods §16). `share` is the
+/// the flow is hotter by the running spread × (1 − share): 0.31 at a running spread of 5 K is 3.45 K. `share` is the
 /// share of the time that it runs, 0..1.
 pub fn running_rise_k(spread_k: f64, share: f64) -> f64 {
     if fault::on(Fault::CyclingAtMeanFlow) {
@@ -20,11 +21,26 @@ pub fn running_rise_k(spread_k: f64, share: f64) -> f64 {
     running_spread_k(spread_k, share) * (1.0 - share.clamp(0.0, 1.0))
 }
 
+/// How [`running_rise_k`] changes with the share of the time that it runs, K for the whole time.
+pub(super) fn rise_per_share_k(spread_k: f64, share: f64) -> f64 {
+    if fault::on(Fault::CyclingAtMeanFlow) || share >= 1.0 {
+        return 0.0;
+    }
+    let unheld_k = greater(spread_k, 0.0) / share;
+    let widest_k = greater(spread_k, WIDEST_SPREAD_K);
+    // A spread that is held stays as the share changes; one that is not grows as its inverse.
+    if unheld_k > widest_k {
+        -widest_k
+    } else {
+        -unheld_k / share
+    }
+}
+
 /// Flow minus return while running, K: the spread at the mean load over the share of the time that it runs, held to what pump
 /// and machine allow.
 pub fn running_spread_k(spread_k: f64, share: f64) -> f64 {
-    let unheld = spread_k.max(0.0) / share.clamp(f64::MIN_POSITIVE, 1.0);
-    unheld.min(WIDEST_SPREAD_K.max(spread_k))
+    let unheld = greater(spread_k, 0.0) / share.clamp(f64::MIN_POSITIVE, 1.0);
+    lesser(unheld, greater(spread_k, WIDEST_SPREAD_K))
 }
 
 /// Starts an hour of a machine that runs a share of the time: a thermostat's parabola, most at half load.
@@ -51,7 +67,7 @@ mod tests {
     use crate::heatpump::rating::cycling_cop;
     use proptest::prelude::*;
 
-    /// methods §16: running fraction 0.31 at 5 K is +3.5 K.
+    /// By hand, 5 K × (1 − 0.31): running fraction 0.31 at 5 K is +3.5 K.
     #[test]
     fn the_flow_is_hotter_while_running() {
         assert!((running_rise_k(0.31 * 5.0, 0.31) - 3.45).abs() < 1e-12);

@@ -74,7 +74,7 @@ pub(super) enum Parameter {
     SpeedLeast,
 }
 
-// Where beliefs come from; methods §13, with its marks.
+// Where beliefs come from.
 const PRACTICE: &str = "common practice, no source";
 const EFFICIENCY: &str = "usual 0.60–0.72 at ratio 3–4 [from memory]";
 const RATIO: &str = "scroll tests 2.5–2.6 (Cuevas and Lebrun 2010)";

@@ -1,23 +1,17 @@
 //! The machine running steadily by its map, in balance with frost and with what the source offers.
 
+use super::balance::{Balance, Next, usual_draw_kw};
 use super::duty::ColdSide;
 use super::frost::{FrostLoss, humidity_ratio};
 use super::heat_pump::HeatPump;
 use super::limits::LEAST_DIFFERENCE_K;
-use super::map::Range;
+use super::map::{Range, Spot};
 use super::sheet::SourceKind;
+use crate::extremes::lesser;
 
 /// Change of output below which the frost substitution ends, relative, and the most substitutions; two or three are usual.
 const FROST_TOLERANCE: f64 = 1e-6;
 const MOST_FROST_STEPS: usize = 12;
-/// Error of the source temperature at which the balance with the offer ends, K: 3e-7 of the electricity.
-const DRAW_TOLERANCE_K: f64 = 1e-5;
-/// Hastened substitutions of that balance before a bracket is sought; two or three are usual.
-const MOST_QUICK_STEPS: usize = 6;
-/// Of a kilowatt of heat about this comes from the source (COP 4): where the substitution begins, nothing else.
-const USUAL_EXTRACTED_SHARE: f64 = 0.75;
-/// Most steps of that balance: the last half of them halve the bracket, which is enough from any bracket in use.
-const MOST_DRAW_STEPS: usize = 80;
 /// Halvings of the range of output when the machine is turned down: 1e-9 of it is left.
 const TURN_DOWN_HALVINGS: usize = 30;
 /// At what output the machine is asked to run.
@@ -27,6 +21,25 @@ pub(super) enum Wanted {
     Least,
     /// A net output, kW, held between the two.
     Net(f64),
+}
+
+/// Where a machine stands in the map.
+pub(super) struct Place<'a> {
+    /// Source temperature entering, °C.
+    pub source_c: f64,
+    /// The source temperature it is looked up at: a warmer source is as one at the least difference.
+    lookup_c: f64,
+    spot: Spot<'a>,
+    /// Output before frost, as far as the controller allows it.
+    pub range: Range,
+}
+
+impl Place<'_> {
+    /// How the least output changes with flow temperature, kW/K.
+    #[inline]
+    pub fn least_kw_per_k(&self) -> f64 {
+        self.spot.least_kw_per_k()
+    }
 }
 
 /// The machine running steadily by the map, at the sheet's own size.
@@ -66,6 +79,21 @@ impl Steady {
     pub fn net_kw(&self) -> f64 {
         self.gross_kw * (1.0 - self.loss.output)
     }
+
+    /// What lies on the straight line from an earlier one through this one, `further` times as far beyond this as it is from there.
+    pub fn beyond(&self, earlier: &Self, further: f64) -> Self {
+        let on = |before: f64, now: f64| now + further * (now - before);
+        Self {
+            source_c: on(earlier.source_c, self.source_c),
+            gross_kw: on(earlier.gross_kw, self.gross_kw),
+            electric_kw: on(earlier.electric_kw, self.electric_kw),
+            source_side_kw: on(earlier.source_side_kw, self.source_side_kw),
+            extracted_kw: on(earlier.extracted_kw, self.extracted_kw),
+            speed_share: on(earlier.speed_share, self.speed_share),
+            loss: self.loss,
+            held: self.held,
+        }
+    }
 }
 
 impl HeatPump {
@@ -79,10 +107,8 @@ impl HeatPump {
         }
     }
 
-    /// The machine in balance with what the source offers.
-    ///
-    /// Finds the entering temperature that is the open one less what the heat drawn there costs. The heat drawn is continuous
-    /// and bounded, so a bracket always exists; false position (Illinois) with bisection always ends.
+    /// The machine in balance with what the source offers: at the entering temperature that is the open one less what the heat drawn
+    /// there costs.
     pub(super) fn steady(
         &self,
         cold: &ColdSide,
@@ -90,72 +116,42 @@ impl HeatPump {
         wanted: Wanted,
         moisture: f64,
     ) -> Steady {
-        let at = |source_c: f64| self.steady_at(source_c, flow_c, wanted, moisture);
-        // An offer is made in kelvin per kilowatt of the real machine.
+        let first = self.begin(cold, flow_c, wanted);
+        self.balanced(cold, first, flow_c, wanted, moisture)
+    }
+
+    /// Where to begin to look for the balance with what the source offers.
+    #[inline]
+    pub(super) fn begin(&self, cold: &ColdSide, flow_c: f64, wanted: Wanted) -> Place<'_> {
         let k_per_kw = cold.k_per_kw * self.scale;
         if k_per_kw == 0.0 {
-            return at(cold.open_c);
+            return self.place(cold.open_c, flow_c);
         }
-        let excess =
-            |steady: &Steady| steady.source_c + k_per_kw * steady.extracted_kw - cold.open_c;
-        // What is drawn hardly changes over the fall: a substitution from near the end, hastened, almost always suffices.
         let near_kw = match wanted {
-            Wanted::Net(net_kw) => USUAL_EXTRACTED_SHARE * net_kw,
-            Wanted::Least | Wanted::Greatest => 0.0,
+            Wanted::Net(net_kw) => net_kw,
+            Wanted::Greatest => self.place(cold.open_c, flow_c).range.greatest_kw,
+            Wanted::Least => self.place(cold.open_c, flow_c).range.least_kw,
         };
-        let mut secant = Secant::default();
-        let mut source_c = cold.open_c - k_per_kw * near_kw;
-        for _ in 0..MOST_QUICK_STEPS {
-            let steady = at(source_c);
-            let off_k = -excess(&steady);
-            if off_k.abs() < DRAW_TOLERANCE_K {
-                return steady;
-            }
-            source_c = secant.next(source_c, off_k);
-        }
-        let open = at(cold.open_c);
-        let (mut high, mut high_excess) = (cold.open_c, excess(&open));
-        let mut width = high_excess.max(DRAW_TOLERANCE_K);
-        let mut low = high - width;
-        let mut steady = at(low);
-        let mut low_excess = excess(&steady);
-        for _ in 0..MOST_DRAW_STEPS {
-            if low_excess <= 0.0 {
-                break;
-            }
-            width *= 2.0;
-            low = high - width;
-            steady = at(low);
-            low_excess = excess(&steady);
-        }
-        // The end that stays twice is weighted down (Illinois), so that both ends move.
-        let mut stayed = 0;
-        for step in 0..MOST_DRAW_STEPS {
-            if excess(&steady).abs() < DRAW_TOLERANCE_K || high - low < DRAW_TOLERANCE_K {
-                break;
-            }
-            let middle = if step > MOST_DRAW_STEPS / 2 {
-                0.5 * (low + high)
-            } else {
-                (low * high_excess - high * low_excess) / (high_excess - low_excess)
-            };
-            steady = at(middle);
-            let found = excess(&steady);
-            if found > 0.0 {
-                (high, high_excess) = (middle, found);
-                if stayed == 1 {
-                    low_excess *= 0.5;
-                }
-                stayed = 1;
-            } else {
-                (low, low_excess) = (middle, found);
-                if stayed == -1 {
-                    high_excess *= 0.5;
-                }
-                stayed = -1;
+        self.place(cold.open_c - k_per_kw * usual_draw_kw(near_kw), flow_c)
+    }
+
+    /// The machine in balance with what the source offers, looked for from a place on.
+    pub(super) fn balanced<'a>(
+        &'a self,
+        cold: &ColdSide,
+        mut place: Place<'a>,
+        flow_c: f64,
+        wanted: Wanted,
+        moisture: f64,
+    ) -> Steady {
+        let mut balance = Balance::new(self, cold);
+        loop {
+            let steady = self.steady_at(&place, wanted, moisture);
+            match balance.next(&steady, flow_c) {
+                Next::At(source_c) => place = self.place(source_c, flow_c),
+                Next::Found(steady, _) => return steady,
             }
         }
-        steady
     }
 
     /// The machine turned down until what it draws lets the source enter at its lowest; nothing where even its least output
@@ -172,7 +168,8 @@ impl HeatPump {
             return None;
         }
         let bearable_kw = (cold.open_c - lowest_c) / k_per_kw;
-        let at = |wanted| self.steady_at(lowest_c, flow_c, wanted, moisture);
+        let place = self.place(lowest_c, flow_c);
+        let at = |wanted| self.steady_at(&place, wanted, moisture);
         let (least, greatest) = (at(Wanted::Least), at(Wanted::Greatest));
         if greatest.extracted_kw <= bearable_kw {
             return Some(greatest);
@@ -190,87 +187,99 @@ impl HeatPump {
         (held.extracted_kw <= bearable_kw).then_some(held)
     }
 
-    /// Least output before frost, kW.
-    pub(super) fn least_kw_at(&self, source_c: f64, flow_c: f64) -> f64 {
-        let lookup_c = source_c.min(flow_c - LEAST_DIFFERENCE_K);
-        self.allowed(self.core.map.range(lookup_c, flow_c)).least_kw
-    }
-
-    /// A range of the map as far as the controller allows it.
-    fn allowed(&self, range: Range) -> Range {
-        let cap_kw = self.core.limits.greatest_output_kw;
-        let greatest_kw = cap_kw.map_or(range.greatest_kw, |cap| range.greatest_kw.min(cap));
-        Range {
-            greatest_kw,
-            least_kw: range.least_kw.min(greatest_kw),
+    /// Where a machine stands in the map at an entering source and a flow temperature.
+    #[inline]
+    pub(super) fn place(&self, source_c: f64, flow_c: f64) -> Place<'_> {
+        let core = &*self.core;
+        let lookup_c = lesser(source_c, flow_c - LEAST_DIFFERENCE_K);
+        let spot = core.map.spot(lookup_c, flow_c);
+        let mut range = spot.range;
+        if let Some(cap_kw) = core.limits.greatest_output_kw {
+            range.greatest_kw = lesser(range.greatest_kw, cap_kw);
+        }
+        range.least_kw = lesser(range.least_kw, range.greatest_kw);
+        Place {
+            source_c,
+            lookup_c,
+            spot,
+            range,
         }
     }
 
-    /// The machine at an entering source temperature, by the map.
-    fn steady_at(&self, source_c: f64, flow_c: f64, wanted: Wanted, moisture: f64) -> Steady {
-        let core = &*self.core;
-        let machine = &core.machine.machine;
-        let lookup_c = source_c.min(flow_c - LEAST_DIFFERENCE_K);
-        let spot = core.map.spot(lookup_c, flow_c);
-        let range = spot.range;
+    /// The machine at a place.
+    pub(super) fn steady_at(&self, place: &Place<'_>, wanted: Wanted, moisture: f64) -> Steady {
         let Range {
             greatest_kw,
             least_kw,
-        } = self.allowed(range);
-        let width = range.greatest_kw - range.least_kw;
-        let at_output = |gross_kw: f64, held: Held| {
-            let fraction = if width > 0.0 {
-                (gross_kw - range.least_kw) / width
-            } else {
-                1.0
-            };
-            let input = spot.input(fraction);
-            let electric_kw = gross_kw * input.electric_per_heat;
-            let source_side_kw = machine.source_side_kw(input.speed_share);
-            let work_kw = (electric_kw - source_side_kw) * machine.compressor.drive_efficiency;
-            let extracted_kw = gross_kw - work_kw;
-            let loss = if moisture > 0.0 {
-                let evaporating_c = lookup_c - machine.evaporator.approach_k(extracted_kw);
-                core.frost.loss(source_c, evaporating_c, moisture)
-            } else {
-                FrostLoss::default()
-            };
-            Steady {
-                source_c,
-                gross_kw,
-                electric_kw,
-                source_side_kw,
-                extracted_kw,
-                speed_share: input.speed_share,
-                loss,
-                held,
-            }
-        };
-        let net_kw = match wanted {
-            Wanted::Greatest => return at_output(greatest_kw, Held::AtGreatest),
-            Wanted::Least => return at_output(least_kw, Held::AtLeast),
-            Wanted::Net(net_kw) => net_kw,
-        };
-        // Frost takes its share of a greater output: steps to the gross output that leaves what is wanted.
-        let mut steady = at_output(net_kw.clamp(least_kw, greatest_kw), Held::Between);
-        let mut secant = Secant::default();
-        for _ in 0..MOST_FROST_STEPS {
-            let gross_kw = net_kw / (1.0 - steady.loss.output);
-            steady.held = if gross_kw > greatest_kw {
-                Held::AtGreatest
+        } = place.range;
+        let hold = |gross_kw: f64| {
+            if gross_kw > greatest_kw {
+                (greatest_kw, Held::AtGreatest)
             } else if gross_kw < least_kw {
-                Held::AtLeast
+                (least_kw, Held::AtLeast)
             } else {
-                Held::Between
-            };
-            let missing_kw = gross_kw.clamp(least_kw, greatest_kw) - steady.gross_kw;
-            if missing_kw.abs() < FROST_TOLERANCE * steady.gross_kw {
-                break;
+                (gross_kw, Held::Between)
             }
-            let next_kw = secant.next(steady.gross_kw, missing_kw);
-            steady = at_output(next_kw.clamp(least_kw, greatest_kw), steady.held);
+        };
+        let (mut gross_kw, mut held) = match wanted {
+            Wanted::Greatest => (greatest_kw, Held::AtGreatest),
+            Wanted::Least => (least_kw, Held::AtLeast),
+            Wanted::Net(net_kw) => hold(net_kw),
+        };
+        let mut secant = Secant::default();
+        let mut steps = 0;
+        loop {
+            let mut steady = self.at_output(place, gross_kw, moisture);
+            steady.held = held;
+            let Wanted::Net(net_kw) = wanted else {
+                return steady;
+            };
+            // Frost takes its share of a greater output: steps to the gross output that leaves what is wanted.
+            let (needed_kw, now_held) = hold(net_kw / (1.0 - steady.loss.output));
+            steady.held = now_held;
+            let missing_kw = needed_kw - gross_kw;
+            if missing_kw.abs() < FROST_TOLERANCE * gross_kw || steps == MOST_FROST_STEPS {
+                return steady;
+            }
+            steps += 1;
+            held = now_held;
+            gross_kw = hold(secant.next(gross_kw, missing_kw)).0;
         }
-        steady
+    }
+
+    /// The machine at a gross output at a place in the map.
+    #[inline]
+    fn at_output(&self, place: &Place<'_>, gross_kw: f64, moisture: f64) -> Steady {
+        let core = &*self.core;
+        let machine = &core.machine.machine;
+        let whole = place.spot.range;
+        let width = whole.greatest_kw - whole.least_kw;
+        let fraction = if width > 0.0 {
+            (gross_kw - whole.least_kw) / width
+        } else {
+            1.0
+        };
+        let input = place.spot.input(fraction);
+        let electric_kw = gross_kw * input.electric_per_heat;
+        let source_side_kw = machine.source_side_kw(input.speed_share);
+        let work_kw = (electric_kw - source_side_kw) * machine.compressor.drive_efficiency;
+        let extracted_kw = gross_kw - work_kw;
+        let loss = if moisture > 0.0 {
+            let evaporating_c = place.lookup_c - machine.evaporator.approach_k(extracted_kw);
+            core.frost.loss(place.source_c, evaporating_c, moisture)
+        } else {
+            FrostLoss::default()
+        };
+        Steady {
+            source_c: place.source_c,
+            gross_kw,
+            electric_kw,
+            source_side_kw,
+            extracted_kw,
+            speed_share: input.speed_share,
+            loss,
+            held: Held::Between,
+        }
     }
 }
 

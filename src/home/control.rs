@@ -17,6 +17,21 @@ pub enum Control {
 }
 
 impl Control {
+    /// The same control over emitters whose design flow has moved from one temperature to another (°C): what it sets above the room
+    /// (°C) changes in proportion.
+    pub fn scaled(&self, from_c: f64, to_c: f64, room_c: f64) -> Self {
+        let scale = (to_c - room_c) / (from_c - room_c);
+        let moved = |flow_c: f64| room_c + (flow_c - room_c) * scale;
+        match *self {
+            Self::FollowingLoad => Self::FollowingLoad,
+            Self::Fixed(flow_c) => Self::Fixed(moved(flow_c)),
+            Self::Line { cold, mild } => Self::Line {
+                cold: (cold.0, moved(cold.1)),
+                mild: (mild.0, moved(mild.1)),
+            },
+        }
+    }
+
     /// The flow it sets at an outdoor temperature, °C; nothing when it follows the load.
     pub fn flow_c(&self, outdoor_c: f64) -> Option<f64> {
         match *self {

@@ -153,7 +153,8 @@ impl Emitters {
     }
 
     /// Other emitters of the same kind for the same load, with another design flow temperature (°C) and the same spread as
-    /// far as the room (°C) allows; other groups and the greatest flow keep their distance.
+    /// far as the room (°C) allows; other groups and the greatest flow keep their distance, and a flow that is set, fixed or by a
+    /// line, keeps its share of the excess above the room.
     pub fn with_design_flow(&self, flow_c: f64, room_c: f64) -> Self {
         /// Return water stays at least this much above the room, K.
         const LEAST_EXCESS_K: f64 = 1.0;
@@ -178,7 +179,10 @@ impl Emitters {
             room_c,
             greatest_flow_c,
         )
-        .with_control(self.control)
+        .with_control(
+            self.control
+                .scaled(self.design_flow_c(), groups[0].flow_c, room_c),
+        )
         .with_header(self.header_k)
     }
 
@@ -191,6 +195,7 @@ impl Emitters {
     ///
     /// EN 442: output ∝ excess temperature ^ n with the arithmetic mean water temperature; the water flow stays as
     /// designed, so flow minus return is proportional to the heat. One power a group.
+    #[inline]
     pub fn at_load(&self, heat_kw: f64, room_c: f64) -> WaterTemperatures {
         let share = heat_kw / self.design_load_kw;
         let leading = self.groups[0].at_share(share, self.room_c, room_c);
@@ -230,25 +235,10 @@ impl Emitters {
     ///
     /// A flow hotter than needed is throttled by the room valves: the same mean water, a cooler return. A cooler flow carries
     /// less heat.
+    #[inline]
     pub fn supply(&self, heat_kw: f64, room_c: f64, outdoor_c: f64) -> Supply {
-        let needed = self.at_load(heat_kw, room_c);
-        let spread_k = needed.flow_c - needed.return_c;
         match self.control.flow_c(outdoor_c) {
-            None => Supply {
-                heat_kw,
-                water: needed,
-                spread_k,
-            },
-            Some(flow_c) if flow_c >= needed.flow_c => {
-                let return_c = (2.0 * needed.mean_c() - flow_c).max(room_c.min(needed.return_c));
-                Supply {
-                    heat_kw,
-                    water: WaterTemperatures { flow_c, return_c },
-                    spread_k,
-                }
-            }
-            Some(flow_c) => {
-                let heat_kw = self.output_kw(flow_c, room_c);
+            None => {
                 let water = self.at_load(heat_kw, room_c);
                 Supply {
                     heat_kw,
@@ -256,6 +246,27 @@ impl Emitters {
                     spread_k: water.flow_c - water.return_c,
                 }
             }
+            Some(flow_c) => self.supply_at(heat_kw, room_c, flow_c),
+        }
+    }
+
+    /// What they carry of a heat (kW) at a flow temperature, into rooms at a temperature (°C).
+    pub fn supply_at(&self, heat_kw: f64, room_c: f64, flow_c: f64) -> Supply {
+        let needed = self.at_load(heat_kw, room_c);
+        if flow_c >= needed.flow_c {
+            let return_c = (2.0 * needed.mean_c() - flow_c).max(room_c.min(needed.return_c));
+            return Supply {
+                heat_kw,
+                water: WaterTemperatures { flow_c, return_c },
+                spread_k: needed.flow_c - needed.return_c,
+            };
+        }
+        let heat_kw = self.output_kw(flow_c, room_c);
+        let water = self.at_load(heat_kw, room_c);
+        Supply {
+            heat_kw,
+            water,
+            spread_k: water.flow_c - water.return_c,
         }
     }
 
@@ -281,7 +292,7 @@ mod tests {
     use super::*;
     use proptest::prelude::*;
 
-    /// EN 442 factors against ΔT50 (methods §5, computed): 40 K 0.7482, 35 K 0.6290, 30 K 0.5148, 25 K 0.4061, 20 K 0.3039.
+    /// EN 442 factors against ΔT50, (ΔT/50)^1.3: 40 K 0.7482, 35 K 0.6290, 30 K 0.5148, 25 K 0.4061, 20 K 0.3039.
     #[test]
     fn radiator_factors_follow_en_442() {
         // No spread, so that flow = mean: a radiator of 1 kW at ΔT 50.
@@ -298,7 +309,7 @@ mod tests {
         }
     }
 
-    /// methods §16: +15 % loss moves a 50 °C flow to about 53.5 °C, −15 % to 46.4 °C, with the emitters unchanged (50/43 at design).
+    /// EN 442 by hand: +15 % loss moves a 50 °C flow to about 53.5 °C, −15 % to 46.4 °C, with the emitters unchanged (50/43 at design).
     #[test]
     fn more_heat_through_the_same_radiators_needs_hotter_water() {
         let radiators = Emitters::new(EmitterKind::Radiators, 5.0, 50.0, 43.0, 20.0, 80.0);

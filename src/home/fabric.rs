@@ -1,5 +1,7 @@
 //! One room of one heat capacity: the heat an hour needs, and the temperature it leaves behind.
 
+use crate::extremes::{greater, lesser};
+
 /// Specific heat capacity of a building by construction, ISO 13790:2008 table 12 (values from memory).
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Construction {
@@ -151,6 +153,7 @@ impl Fabric {
     ///
     /// One capacity: `C dT/dt = Q + G − H (T − To)`, solved exactly for constant right-hand side:
     /// `T(t) = T∞ + (T0 − T∞) e^(−t/τ)` with `T∞ = To + (Q + G)/H`.
+    #[inline]
     pub fn heat_to_reach_kwh(
         &self,
         room_c: f64,
@@ -178,6 +181,7 @@ impl Fabric {
     /// [`RECOVERY_H`], and lets a warmer one fall at once.
     ///
     /// At the set point it is the steady loss less gains, whatever the time.
+    #[inline]
     pub fn heat_wanted_kw(&self, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
         let left = self.left_at_target(room_c, target_c);
         self.heat_kw(left, room_c, target_c, outdoor_c, gains_kw)
@@ -192,9 +196,13 @@ impl Fabric {
         }
     }
 
+    #[inline]
     fn heat_kw(&self, left: f64, room_c: f64, target_c: f64, outdoor_c: f64, gains_kw: f64) -> f64 {
         let settles_c = self.heads_for_c(left, room_c, target_c);
-        (self.heat_loss_kw_per_k * (settles_c - outdoor_c) - gains_kw).max(0.0)
+        greater(
+            self.heat_loss_kw_per_k * (settles_c - outdoor_c) - gains_kw,
+            0.0,
+        )
     }
 
     /// Temperature the room heads for when a share `left` of its distance is left at the target, °C.
@@ -202,11 +210,25 @@ impl Fabric {
         (target_c - room_c * left) / (1.0 - left)
     }
 
-    /// Temperature that the heat wanted heads for, °C, and in how many hours it passes the target.
-    pub fn recovery_heads_for_c(&self, room_c: f64, target_c: f64) -> (f64, f64) {
-        let left = self.left_at_target(room_c, target_c);
-        let hours = if room_c > target_c { 1.0 } else { RECOVERY_H };
-        (self.heads_for_c(left, room_c, target_c), hours)
+    /// Temperature that the heat wanted heads for, °C, and in how many hours it passes the target: one where the warmth is wanted at
+    /// the time.
+    pub fn recovery_heads_for_c(
+        &self,
+        room_c: f64,
+        target_c: f64,
+        at_the_time: bool,
+    ) -> (f64, f64) {
+        if at_the_time || room_c > target_c {
+            (
+                self.heads_for_c(self.left_after_hour, room_c, target_c),
+                1.0,
+            )
+        } else {
+            (
+                self.heads_for_c(self.left_after_recovery, room_c, target_c),
+                RECOVERY_H,
+            )
+        }
     }
 
     /// Whether it stores any heat: without storage nothing is gained by heating ahead.
@@ -225,6 +247,7 @@ impl Fabric {
     }
 
     /// Steps the room through one hour with a constant heat (kWh in the hour).
+    #[inline]
     pub fn step(
         &self,
         room_c: f64,
@@ -236,11 +259,8 @@ impl Fabric {
         let settles_c = outdoor_c + (heat_kwh + gains_kw) / self.heat_loss_kw_per_k;
         let free_c = settles_c + (room_c - settles_c) * self.left_after_hour;
         // Opening windows holds the room at the airing limit, unless it is warmer outside still.
-        let end_c = free_c.min(
-            (set_point_c + self.airing_k)
-                .max(outdoor_c)
-                .max(room_c.min(free_c)),
-        );
+        let aired_above_c = greater(set_point_c + self.airing_k, outdoor_c);
+        let end_c = lesser(free_c, greater(aired_above_c, lesser(room_c, free_c)));
         let stored_kwh = self.capacity_kwh_per_k * (end_c - room_c);
         let free_loss_kwh = heat_kwh + gains_kw - self.capacity_kwh_per_k * (free_c - room_c);
         // What is left of heat and gains after loss and storage, written so that an hour without airing holds a plain 0.
@@ -268,7 +288,7 @@ mod tests {
         )
     }
 
-    /// methods §16: at −4 °C, 212 W/K: 5.09 kW from 20 °C, 4.13 kW from 15.5 °C.
+    /// By hand: at −4 °C, 212 W/K: 5.09 kW from 20 °C, 4.13 kW from 15.5 °C.
     #[test]
     fn design_load_is_taken_from_the_set_point_not_the_base_temperature() {
         assert!((terrace().design_load_kw(20.0, -4.0) - 5.088).abs() < 1e-9);

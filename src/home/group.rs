@@ -1,5 +1,8 @@
 //! One kind of emitter at its own design temperatures: heat against water temperature.
 
+use std::sync::LazyLock;
+
+use super::power::FixedPower;
 use crate::fault::{self, Fault};
 
 /// What carries the heat into the rooms, with the exponent of its output.
@@ -21,6 +24,20 @@ impl EmitterKind {
             Self::Underfloor => 1.1,
             Self::FanConvectors => 1.05,
         }
+    }
+
+    /// Share of the design excess temperature that carries a share of the design output: its power of one over the exponent.
+    #[inline]
+    fn excess_share(self, output_share: f64) -> f64 {
+        static TABLES: LazyLock<[FixedPower; 3]> = LazyLock::new(|| {
+            [
+                EmitterKind::Radiators,
+                EmitterKind::Underfloor,
+                EmitterKind::FanConvectors,
+            ]
+            .map(|kind| FixedPower::new(1.0 / kind.exponent()))
+        });
+        TABLES[self as usize].of(output_share)
     }
 }
 
@@ -71,8 +88,9 @@ impl Group {
     }
 
     /// Water temperatures at a share of its design output, into rooms at `now_c`, designed for rooms at `room_c`.
+    #[inline]
     pub(super) fn at_share(&self, share: f64, room_c: f64, now_c: f64) -> WaterTemperatures {
-        let mean_c = now_c + self.excess_k(room_c) * share.powf(1.0 / self.kind.exponent());
+        let mean_c = now_c + self.excess_k(room_c) * self.kind.excess_share(share);
         let half_spread_k = self.spread_k() * share / 2.0;
         WaterTemperatures {
             flow_c: mean_c + half_spread_k,

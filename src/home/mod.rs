@@ -12,6 +12,7 @@ mod floor;
 mod group;
 mod pattern;
 mod pipe;
+mod power;
 mod rooms;
 mod store;
 

@@ -3,6 +3,7 @@
 use chrono::{Datelike, NaiveDate};
 
 use crate::calendar::{CivilHour, DayType};
+use crate::units::as_set;
 
 /// Set point outside the heating season, against frost, °C. Common practice, no source.
 pub const FROST_C: f64 = 7.0;
@@ -127,7 +128,7 @@ impl Pattern {
     pub fn words(&self) -> String {
         let comfort_c = self.comfort_c();
         let mut words = if self.is_continuous() {
-            format!("{comfort_c:.0} °C all day")
+            format!("{} °C all day", as_set(comfort_c))
         } else {
             let hours = |day: &[f64; 24]| day.iter().filter(|&&c| c >= comfort_c).count();
             let (weekday, weekend) = (hours(&self.weekday_c), hours(&self.weekend_c));
@@ -137,8 +138,9 @@ impl Pattern {
                 format!("{weekday} h on working days, {weekend} h at weekends")
             };
             format!(
-                "{comfort_c:.0} °C for {spells}, else {:.0} °C",
-                self.set_back_c()
+                "{} °C for {spells}, else {} °C",
+                as_set(comfort_c),
+                as_set(self.set_back_c())
             )
         };
         if self.season.is_some() {

@@ -85,7 +85,7 @@ mod tests {
         }
     }
 
-    /// EN 442 factor at ΔT 30 is 0.5148 (methods §5): 1 kW from a radiator of 1.9425 kW needs mean water at 50 °C.
+    /// EN 442 factor at ΔT 30 is 0.5148 ((30/50)^1.3): 1 kW from a radiator of 1.9425 kW needs mean water at 50 °C.
     #[test]
     fn a_room_needs_the_flow_its_radiator_asks_for() {
         let room = room("Living room", 1.0, 1.0 / 0.5148);

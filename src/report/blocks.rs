@@ -33,6 +33,8 @@ pub(super) enum Block {
     },
     /// A picture by its name, with its caption.
     Picture { name: String, caption: Line },
+    /// Small pictures side by side, by their names: those that stand in one paragraph.
+    Abreast(Vec<String>),
 }
 
 /// Reads Markdown. What the sentences have no use for (raw HTML, code, quotes) is left out, its text kept.
@@ -55,8 +57,10 @@ struct Reader {
     row: Vec<Line>,
     /// Items that are being read.
     open_items: usize,
-    /// A picture that stood in the present paragraph.
+    /// The picture whose caption is being read.
     picture: Option<String>,
+    /// Pictures of the present paragraph.
+    pictures: Vec<(String, Line)>,
 }
 
 impl Reader {
@@ -123,7 +127,20 @@ impl Reader {
             TagEnd::Image => {
                 if let Some(name) = self.picture.take() {
                     let caption = std::mem::take(&mut self.line);
-                    self.blocks.push(Block::Picture { name, caption });
+                    self.pictures.push((name, caption));
+                }
+            }
+            TagEnd::Paragraph if !self.pictures.is_empty() => {
+                self.line.clear();
+                let mut pictures = std::mem::take(&mut self.pictures);
+                match (pictures.pop(), pictures.is_empty()) {
+                    (Some((name, caption)), true) => {
+                        self.blocks.push(Block::Picture { name, caption });
+                    }
+                    (last, _) => {
+                        let names = pictures.into_iter().chain(last).map(|(name, _)| name);
+                        self.blocks.push(Block::Abreast(names.collect()));
+                    }
                 }
             }
             // Inside a list the item takes the line.
@@ -193,7 +210,7 @@ mod tests {
     #[test]
     fn the_kinds_of_block_are_told_apart() {
         let read = blocks(
-            "A **b** [c](#money).\n\n- one\n- two\n\n1. first\n\n| a | b |\n|:--|--:|\n| x | 1 |\n\n![how](name)\n\n### h\n",
+            "A **b** [c](#money).\n\n- one\n- two\n\n1. first\n\n| a | b |\n|:--|--:|\n| x | 1 |\n\n![how](name)\n\n![](p)![](q)\n\n### h\n",
         );
         assert!(matches!(&read[0], Block::Paragraph(line) if line.len() == 5 && line[1].strong));
         assert!(
@@ -205,8 +222,9 @@ mod tests {
             matches!(&read[3], Block::Table { rows, figures, .. } if rows.len() == 1 && figures == &[false, true])
         );
         assert!(matches!(&read[4], Block::Picture { name, .. } if name == "name"));
-        assert!(matches!(&read[5], Block::Heading(line) if plain(line) == "h"));
-        assert_eq!(read.len(), 6);
+        assert!(matches!(&read[5], Block::Abreast(names) if names == &["p", "q"]));
+        assert!(matches!(&read[6], Block::Heading(line) if plain(line) == "h"));
+        assert_eq!(read.len(), 7);
     }
 
     #[test]

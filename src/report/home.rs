@@ -2,6 +2,7 @@
 
 use super::text::wrapped;
 use crate::answer::Estimate;
+use crate::units::as_set;
 
 /// What belongs on the first screen: the room that sets today's flow, what another running pattern does, and the meter.
 pub(super) fn home_in_words(estimate: &Estimate) -> Vec<String> {
@@ -60,8 +61,11 @@ pub fn home_text(estimate: &Estimate) -> String {
                 format!(", reheated from cold in {hours:.1} h")
             });
             detail.push(format!(
-                "store of {:.0} L: {:.0} L at {:.0} °C when full{reheat}, loses {:.1} kWh a day",
-                store.volume_l, store.usable_l, store.drawn_at_c, store.standing_loss_kwh_per_day
+                "store of {:.0} L: {:.0} L at {} °C when full{reheat}, loses {:.1} kWh a day",
+                store.volume_l,
+                store.usable_l,
+                as_set(store.drawn_at_c),
+                store.standing_loss_kwh_per_day
             ));
         }
         let parts: Vec<_> = system

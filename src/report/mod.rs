@@ -23,6 +23,7 @@ mod sentences;
 mod study;
 mod table;
 mod text;
+mod told;
 mod weather_years;
 
 pub use account::{accounts_text, bill_table};
@@ -36,7 +37,7 @@ pub use odds_pictures::{odds_pictures, samples_csv, spread_picture};
 pub use page::report_html;
 #[cfg(feature = "pdf")]
 pub use pdf::report_pdf;
-pub use pictures::{Drawn, Material, pictures, signature_picture};
+pub use pictures::{Drawn, Material, in_front, pictures, signature_picture, study_pictures};
 pub use study::study_text;
 pub use table::{plain_table, plain_table_within};
 pub use text::estimate_text;

@@ -2,43 +2,41 @@
 
 use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
-use crate::answer::odds::OddsAnswer;
+use crate::answer::odds::{Matters, OddsAnswer};
 use crate::answer::short;
-use crate::locale::Marks;
+use crate::locale::Locale;
 
-/// The odds as text for a terminal of 80 columns or more, with the marks of a place.
-pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
-    let whole = |value: f64| marks.number(value, 0);
-    let error = |error: Option<f64>| {
-        // A whole percent: the error of an error is large.
-        error.map_or_else(String::new, |error| {
-            format!(" ± {}", whole((error * 100.0).max(1.0)))
-        })
-    };
+/// Share of the spread from which a lever has a line of its own: below it rounds to 0 %.
+const SAID: f64 = 0.005;
+
+/// The odds as text for a terminal of 80 columns or more, in the form of a place.
+pub fn odds_text(answer: &OddsAnswer, locale: &Locale) -> String {
+    let marks = &locale.marks;
+    let told = |sentence: &str| locale.told(sentence, &answer.currency);
+    let money = |amount: f64| marks.money(&answer.currency, amount);
     let mut blocks: Vec<String> = vec![
         answer
             .choices
             .iter()
-            .map(|choice| wrapped(&marks.localized(&choice.sentence), "", "  "))
+            .map(|choice| wrapped(&told(&choice.sentence), "", "  "))
             .collect::<Vec<_>>()
             .join("\n"),
     ];
     let code = &answer.currency;
     let rows = answer.choices.iter().map(|choice| {
         vec![
-            choice.label.clone(),
-            whole(choice.saving.p10),
-            whole(choice.saving.p50),
-            whole(choice.saving.p90),
+            match choice.leaves_cold {
+                Some(_) => format!("{} (too cold)", choice.label),
+                None => choice.label.clone(),
+            },
+            money(choice.saving.p10),
+            money(choice.saving.p50),
+            money(choice.saving.p90),
             choice.spf_h4.map_or_else(
                 || "–".to_owned(),
                 |spf| format!("{}–{}", marks.number(spf.p10, 1), marks.number(spf.p90, 1)),
             ),
-            format!(
-                "{:.0}{}",
-                choice.chance_cheaper * 100.0,
-                error(choice.chance_error)
-            ),
+            choice.chance_said.clone(),
         ]
     });
     let header = [
@@ -51,17 +49,21 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     ];
     blocks.push(plain_table_within(WIDTH, header, rows));
     if !answer.what_matters.is_empty() {
-        let lines = answer.what_matters.iter().map(|one| {
+        let (great, hardly): (Vec<&Matters>, Vec<&Matters>) = answer
+            .what_matters
+            .iter()
+            .partition(|one| one.share >= SAID);
+        let lines = great.iter().map(|one| {
             let turns = one.turns_with.as_ref().map_or_else(
                 || "does not turn the answer".to_owned(),
-                |with| format!("turns with {}", marks.localized(with)),
+                |with| format!("turns with {}", told(with)),
             );
             let swing = match (one.saving_at_low, one.saving_at_high) {
                 (Some(low), Some(high)) => {
                     format!(
-                        "by it alone a saving of {} to {} {code}, ",
-                        whole(low),
-                        whole(high)
+                        "by it alone a saving of {} to {}, ",
+                        money(low),
+                        money(high)
                     )
                 }
                 _ => String::new(),
@@ -75,7 +77,12 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
             );
             wrapped(&line, "  ", "      ")
         });
-        let lines: Vec<_> = lines.collect();
+        let mut lines: Vec<_> = lines.collect();
+        if !hardly.is_empty() {
+            let names: Vec<&str> = hardly.iter().map(|one| one.lever.as_str()).collect();
+            let line = format!("hardly any of it: {}", names.join(", "));
+            lines.push(wrapped(&line, "  ", "      "));
+        }
         blocks.push(format!(
             "What makes the spread of \"{}\"\n{}",
             answer.about,
@@ -84,18 +91,16 @@ pub fn odds_text(answer: &OddsAnswer, marks: &Marks) -> String {
     }
     if !answer.between.is_empty() {
         let lines = answer.between.iter().map(|pair| {
-            let error = error(pair.chance_error);
             let line = format!(
-                "\"{}\" is cheaper than \"{}\" in {:.0}{error} of 100",
-                pair.label,
-                pair.than,
-                pair.chance_cheaper * 100.0
+                "\"{}\" is cheaper than \"{}\" in {} of 100",
+                pair.label, pair.than, pair.chance_said
             );
             wrapped(&line, "", "  ")
         });
         blocks.push(lines.collect::<Vec<_>>().join("\n"));
     }
-    blocks.push(wrapped(&marks.localized(&answer.find_out), "", "  "));
+    blocks.push(wrapped(&answer.not_drawn, "", "  "));
+    blocks.push(wrapped(&told(&answer.find_out), "", "  "));
     let ranges = answer.uncertain.iter().map(|one| {
         let line = format!(
             "{} {} to {} {}: {}",

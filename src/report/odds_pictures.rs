@@ -1,7 +1,7 @@
 //! The pictures of the odds, and every sample as a row.
 
 use super::pictures::{Drawn, drawn};
-use crate::answer::odds::OddsAnswer;
+use crate::answer::odds::{OddsAnswer, chance_said};
 use crate::chart::{
     ChartError, ChoiceSaving, CostOdds, CostSpread, SavingOdds, SpreadShares, UnknownShare,
     cost_odds, saving_odds, spread_shares,
@@ -10,35 +10,40 @@ use crate::locale::Locale;
 use crate::study::Case;
 use crate::study::odds::{Chance, Quantiles, Sample, Sampler};
 
-/// Saving of every choice and cost of every system in all samples.
+/// Saving of every choice and cost of every system in all samples, of those in `shown` (places in the case).
 ///
 /// # Errors
 /// When a picture cannot be drawn.
 pub fn odds_pictures(
     case: &Case,
     blocks: &[Vec<Sample>],
+    shown: &[usize],
     locale: &Locale,
 ) -> Result<Vec<Drawn>, ChartError> {
     let marks = &locale.marks;
     let currency = || case.currency.code().to_owned();
-    let systems = || case.contenders.iter().enumerate();
-    let choices = systems().skip(1).map(|(place, contender)| {
-        let saving: Vec<Vec<f64>> = blocks
-            .iter()
-            .map(|block| {
-                let saving = |sample: &Sample| sample.systems[0].cost - sample.systems[place].cost;
-                block.iter().map(saving).collect()
-            })
-            .collect();
-        let chance = Chance::of(saving.iter().map(Vec::as_slice), |saving| saving > 0.0);
-        ChoiceSaving {
-            label: contender.system.label.clone(),
-            saving: saving.concat(),
-            chance_error: chance
-                .map(|chance| chance.error)
-                .filter(|error| error.is_finite()),
-        }
-    });
+    let systems = || {
+        let all = case.contenders.iter().enumerate();
+        all.filter(|(place, _)| shown.contains(place))
+    };
+    let choices = systems()
+        .filter(|(place, _)| *place > 0)
+        .map(|(place, contender)| {
+            let saving: Vec<Vec<f64>> = blocks
+                .iter()
+                .map(|block| {
+                    let saving =
+                        |sample: &Sample| sample.systems[0].cost - sample.systems[place].cost;
+                    block.iter().map(saving).collect()
+                })
+                .collect();
+            let chance = Chance::of(saving.iter().map(Vec::as_slice), |saving| saving > 0.0);
+            ChoiceSaving {
+                label: contender.system.label.clone(),
+                saving: saving.concat(),
+                chance: chance.as_ref().map(chance_said),
+            }
+        });
     let saving = SavingOdds {
         currency: currency(),
         choices: choices.collect(),

@@ -54,14 +54,16 @@ pub fn report_html(
         .iter()
         .map(|section| context! { id => section.id, title => &section.title })
         .collect();
+    let (first, rest) = (body(first, "first")?, body(rest, "rest")?);
+    let fonts = chart::font_css(&format!("{}{first}{rest}", place(material)));
     let page = environment.get_template("page.html")?.render(context! {
         title => sections.first().map(|section| section.title.as_str()),
         place => place(material),
-        fonts => chart::font_css(),
+        fonts,
         style => STYLE,
         paper => material.locale.paper.css(),
-        first => body(first, "first")?,
-        rest => body(rest, "rest")?,
+        first,
+        rest,
         contents,
     })?;
     Ok(page)
@@ -119,6 +121,17 @@ fn write_section(
                 tables += 1;
                 let name = format!("{title}, table {tables}");
                 write_table(out, &name, &head, &rows, &figures);
+            }
+            Block::Abreast(names) => {
+                let _ = writeln!(out, "<div class=\"abreast\">");
+                for name in names {
+                    if let Some((drawn, _)) = pictures.get(name.as_str()) {
+                        let svg = drawn.picture.svg_without_fonts()?;
+                        let name = escaped(&name);
+                        let _ = writeln!(out, "<figure id=\"picture-{name}\">\n{svg}\n</figure>");
+                    }
+                }
+                let _ = writeln!(out, "</div>");
             }
             Block::Picture { name, caption } => {
                 if let Some((drawn, phone)) = pictures.get(name.as_str()) {

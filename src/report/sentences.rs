@@ -8,6 +8,7 @@ use minijinja::{AutoEscape, Environment, Error, ErrorKind, Output, State, Value}
 use super::facts::facts;
 use super::pictures::{Drawn, Material};
 use crate::locale::Locale;
+use crate::units::as_set;
 
 /// A section of the report.
 #[derive(Debug, Clone)]
@@ -34,7 +35,8 @@ sections! {
     "change", "What would change it";
     "next", "What to find out next";
     "odds", "How sure it is";
-    "home", "The home, and what was assumed";
+    "levers", "What you could change";
+    "home", "The home";
     "weather", "The weather, and how good it is";
     "systems", "Each system";
     "air-ground", "Air against ground";
@@ -48,6 +50,7 @@ sections! {
     "cautions", "Cautions";
     "limits", "Limits of the method";
     "findings", "Findings";
+    "assumed", "What was assumed";
     "glossary", "Words";
     "origin", "Where this is from";
 }
@@ -107,6 +110,12 @@ fn environment<'a>(material: &Material<'_>, drawn: &[Drawn]) -> Result<Environme
         .iter()
         .map(|drawn| (drawn.name.clone(), drawn.caption.clone()))
         .collect();
+    let there: Vec<String> = captions.keys().cloned().collect();
+    environment.add_function("abreast", move |names: Vec<String>| {
+        let names = names.iter().filter(|name| there.contains(name));
+        let pictures: String = names.map(|name| format!("![]({name})")).collect();
+        Value::from_safe_string(format!("\n{pictures}\n"))
+    });
     environment.add_function("picture", move |name: String| {
         Value::from_safe_string(match captions.get(&name) {
             Some(caption) => format!("\n![{}]({name})\n", escaped(caption)),
@@ -123,6 +132,7 @@ fn environment<'a>(material: &Material<'_>, drawn: &[Drawn]) -> Result<Environme
 
 fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str) {
     let marks = locale.marks;
+    let of_the_place = currency.to_owned();
     let currency = currency.to_owned();
     let money = move |amount: f64, decimals: usize| marks.money_to(&currency, amount, decimals);
     // What is missing is told by a dash, never by a nought.
@@ -131,6 +141,9 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
     };
     environment.add_filter("n", move |value: Value, decimals: usize| {
         told(&value, &|v| marks.number(v, decimals))
+    });
+    environment.add_filter("as_set", move |value: Value| {
+        told(&value, &|v| marks.localized(&as_set(v)))
     });
     environment.add_filter("percent", move |value: Value, decimals: usize| {
         told(&value, &|v| {
@@ -180,7 +193,7 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
                 "dec1" => Ok(marks.number(number, 1)),
                 "dec2" => Ok(marks.number(number, 2)),
                 "percent" => Ok(format!("{}\u{a0}%", marks.number(number * 100.0, 0))),
-                "c0" => Ok(format!("{}\u{a0}°C", marks.number(number, 0))),
+                "set" => Ok(marks.localized(&format!("{}\u{a0}°C", as_set(number)))),
                 _ => Err(Error::new(
                     ErrorKind::InvalidOperation,
                     format!("no way to show “{kind}”"),
@@ -188,10 +201,17 @@ fn add_filters(environment: &mut Environment<'_>, locale: Locale, currency: &str
             }
         },
     );
-    environment.add_filter("localized", move |text: &str| marks.localized(text));
+    environment.add_filter("localized", move |text: &str| {
+        locale.told(text, &of_the_place)
+    });
     environment.add_filter("file", |text: &str| file(text));
     environment.add_filter("short", |text: &str| short(text));
-    environment.add_filter("words", |text: &str| text.replace(['.', '_'], " "));
+    environment.add_filter("capitalized", |text: &str| {
+        let mut letters = text.chars();
+        letters.next().map_or_else(String::new, |first| {
+            first.to_uppercase().chain(letters).collect::<String>()
+        })
+    });
     environment.add_filter("either", move |parts: Vec<String>| {
         let parts: Vec<_> = parts.iter().map(|part| marks.localized(part)).collect();
         match parts.split_last() {

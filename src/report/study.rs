@@ -2,22 +2,25 @@
 
 use super::table::plain_table_within;
 use super::text::{WIDTH, wrapped};
+use super::told::Told;
 use crate::answer::lifetime::{LifetimeAnswer, LifetimeYear, SystemLifetime};
-use crate::answer::study::{ChoiceStudy, EmitterAnswer, SizesAnswer, StudyAnswer, SwingAnswer};
-use crate::answer::{LeverAnswer, short};
+use crate::answer::study::{ChoiceStudy, SizesAnswer, StudyAnswer};
+use crate::answer::{EmitterAnswer, LeverAnswer, SwingAnswer, short};
+use crate::locale::Locale;
 
-/// The studies as text for a terminal of 80 columns or more.
-pub fn study_text(answer: &StudyAnswer) -> String {
+/// The studies as text for a terminal of 80 columns or more, in the form of the place.
+pub fn study_text(answer: &StudyAnswer, locale: &Locale) -> String {
+    let told = &Told::new(locale, &answer.currency);
     let mut blocks: Vec<String> = answer
         .choices
         .iter()
-        .map(|choice| choice_text(choice, &answer.currency))
+        .map(|choice| choice_text(choice, told))
         .collect();
     blocks.extend(
         answer
             .lifetime
             .as_ref()
-            .map(|lifetime| lifetime_text(lifetime, &answer.currency)),
+            .map(|lifetime| lifetime_text(lifetime, told)),
     );
     blocks.push(wrapped(LIMITS, "", ""));
     blocks.join("\n\n")
@@ -28,11 +31,17 @@ const LIMITS: &str = "One quantity is moved at a time and all else stays as it i
 emitters is not in the bill. Flow temperature, emitters, machine and loop are sized by a competent person, room by room, \
 under local rules.";
 
-fn choice_text(choice: &ChoiceStudy, currency: &str) -> String {
+fn choice_text(choice: &ChoiceStudy, told: &Told<'_>) -> String {
     let mut blocks = vec![format!(
-        "{}: {:.0} {currency} a year, {:+.0} against today",
-        choice.label, choice.cost, choice.saving
+        "{}: {} a year, {} against today",
+        choice.label,
+        told.money(choice.cost),
+        told.signed_money(choice.saving)
     )];
+    if let Some(cold) = &choice.leaves_cold {
+        let line = format!("No, {cold}: cheaper is of no use here. More heat comes first.");
+        blocks.push(wrapped(&line, "", "  "));
+    }
     let answered = |measure: &'static str| {
         choice
             .break_even
@@ -49,32 +58,33 @@ fn choice_text(choice: &ChoiceStudy, currency: &str) -> String {
     ] {
         let levers: Vec<_> = answered(measure).collect();
         if !levers.is_empty() {
-            blocks.push(format!("{heading}\n{}", levers_text(&levers)));
+            blocks.push(format!("{heading}\n{}", levers_text(&levers, told)));
         }
     }
     if let Some(spf) = &choice.break_even_spf {
-        blocks.push(wrapped(&spf.sentence, "", "  "));
+        blocks.push(wrapped(&told.said(&spf.sentence), "", "  "));
     }
     blocks.extend(
         choice
             .emitters
             .as_ref()
-            .map(|emitters| emitters_text(emitters)),
+            .map(|emitters| emitters_text(emitters, told)),
     );
-    blocks.extend(choice.sizes.as_ref().map(sizes_text));
+    blocks.extend(choice.sizes.as_ref().map(|sizes| sizes_text(sizes, told)));
     if !choice.swings.is_empty() {
-        blocks.push(swings_text(&choice.swings, currency));
+        blocks.push(swings_text(&choice.swings, told));
     }
     blocks.join("\n\n")
 }
 
 /// Those that break even, a line each; the others in one sentence.
-fn levers_text(levers: &[&LeverAnswer]) -> String {
+fn levers_text(levers: &[&LeverAnswer], told: &Told<'_>) -> String {
     let mut lines = Vec::new();
     let mut stays: Vec<(&str, Vec<&LeverAnswer>)> = Vec::new();
     for lever in levers {
         for (condition, side) in lever.conditions.iter().zip(&lever.sides) {
-            lines.push(wrapped(&format!("{condition}: {side}"), "  ", "      "));
+            let line = told.said(&format!("{condition}: {side}"));
+            lines.push(wrapped(&line, "  ", "      "));
         }
         if let Some(how) = &lever.stays {
             match stays.iter_mut().find(|(same, _)| same == how) {
@@ -94,7 +104,7 @@ fn levers_text(levers: &[&LeverAnswer]) -> String {
             })
             .collect();
         lines.push(wrapped(
-            &format!("It stays {how} with {}.", ranges.join(", ")),
+            &told.said(&format!("It stays {how} with {}.", ranges.join(", "))),
             "  ",
             "    ",
         ));
@@ -102,20 +112,19 @@ fn levers_text(levers: &[&LeverAnswer]) -> String {
     lines.join("\n")
 }
 
-fn or_dash(value: Option<f64>, digits: usize) -> String {
-    value.map_or_else(|| "–".to_owned(), |value| format!("{value:.digits$}"))
+fn or_dash(value: Option<f64>, write: impl Fn(f64) -> String) -> String {
+    value.map_or_else(|| "–".to_owned(), write)
 }
 
-fn emitters_text(emitters: &[EmitterAnswer]) -> String {
+fn emitters_text(emitters: &[EmitterAnswer], told: &Told<'_>) -> String {
     let rows = emitters.iter().map(|step| {
         vec![
-            format!("{:.1} °C", step.flow_c),
-            format!("{:.2}", step.times_today_output),
-            or_dash(step.cost, 0),
-            step.saving
-                .map_or_else(|| "–".to_owned(), |saving| format!("{saving:+.0}")),
-            or_dash(step.spf_h4, 2),
-            or_dash(step.hours_short, 0),
+            format!("{} °C", told.n(step.flow_c, 1)),
+            told.n(step.times_today_output, 2),
+            or_dash(step.cost, |v| told.money(v)),
+            or_dash(step.saving, |v| told.signed_money(v)),
+            or_dash(step.spf_h4, |v| told.n(v, 2)),
+            or_dash(step.hours_short, |v| told.n(v, 0)),
         ]
     });
     let header = [
@@ -130,24 +139,24 @@ fn emitters_text(emitters: &[EmitterAnswer]) -> String {
     let beyond = emitters.iter().find(|step| !step.reached);
     let note = beyond.map_or_else(String::new, |step| {
         format!(
-            "\n  – the machine does not reach {:.1} °C on the design day",
-            step.flow_c
+            "\n  – the machine does not reach {} °C on the design day",
+            told.n(step.flow_c, 1)
         )
     });
     format!("Cooler water and larger emitters\n{table}{note}")
 }
 
-fn sizes_text(sizes: &SizesAnswer) -> String {
+fn sizes_text(sizes: &SizesAnswer, told: &Told<'_>) -> String {
     let rows = sizes.sizes.iter().map(|size| {
         vec![
-            format!("{:.1} kW", size.rated_kw),
-            format!("{:.0}", size.cost),
-            or_dash(size.spf_h4, 2),
-            format!("{:.1} %", size.backup_share * 100.0),
-            format!("{:.0} %", size.coldest_night_cover * 100.0),
-            format!("{:.0}", size.starts),
-            format!("{:.2}", size.least_over_mild_load),
-            format!("{:.0}", size.hours_short),
+            format!("{} kW", told.n(size.rated_kw, 1)),
+            told.money(size.cost),
+            or_dash(size.spf_h4, |v| told.n(v, 2)),
+            format!("{} %", told.n(size.backup_share * 100.0, 1)),
+            format!("{} %", told.n(size.coldest_night_cover * 100.0, 0)),
+            told.n(size.starts, 0),
+            told.n(size.least_over_mild_load, 2),
+            told.n(size.hours_short, 0),
         ]
     });
     let header = [
@@ -162,17 +171,20 @@ fn sizes_text(sizes: &SizesAnswer) -> String {
     ];
     let table = plain_table_within(WIDTH, header, rows);
     format!(
-        "Size of the machine, design heat load {:.1} kW\n{table}\n{}",
-        sizes.design_load_kw,
-        wrapped(&sizes.sentence, "  ", "  ")
+        "Size of the machine, design heat load {} kW\n{table}\n{}",
+        told.n(sizes.design_load_kw, 1),
+        wrapped(&told.said(&sizes.sentence), "  ", "  ")
     )
 }
 
-fn swings_text(swings: &[SwingAnswer], currency: &str) -> String {
+fn swings_text(swings: &[SwingAnswer], told: &Told<'_>) -> String {
     let lines = swings.iter().map(|swing| {
         let line = format!(
-            "{:+.0} to {:+.0} {currency}: {} to {}",
-            swing.saving_at_low, swing.saving_at_high, swing.low_words, swing.high_words
+            "{} to {}: {} to {}",
+            told.signed_money(swing.saving_at_low),
+            told.signed_money(swing.saving_at_high),
+            told.said(&swing.low_words),
+            told.said(&swing.high_words)
         );
         wrapped(&line, "  ", "      ")
     });
@@ -184,25 +196,25 @@ fn swings_text(swings: &[SwingAnswer], currency: &str) -> String {
 }
 
 /// What the first and the last year of a loop that cools its ground cost to run.
-fn own_years(system: &SystemLifetime) -> Option<String> {
+fn own_years(system: &SystemLifetime, told: &Told<'_>) -> Option<String> {
     let bill = |year: &LifetimeYear| year.electricity + year.fuel;
     let (first, last) = (system.by_year.get(1)?, system.by_year.last()?);
     let sentence = format!(
-        "{} costs each year its own, as its ground cools: {:.0} to run in year 1, {:.0} in year {}.",
+        "{} costs each year its own, as its ground cools: {} to run in year 1, {} in year {}.",
         system.label,
-        bill(first),
-        bill(last),
+        told.money(bill(first)),
+        told.money(bill(last)),
         last.year,
     );
     Some(format!("\n{}", wrapped(&sentence, "", "  ")))
 }
 
-fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
+fn lifetime_text(lifetime: &LifetimeAnswer, told: &Told<'_>) -> String {
     let names = lifetime.systems.iter().map(|system| {
         if system.today {
-            format!("{} (today)", system.label)
+            format!("{} (today)", system.name())
         } else {
-            system.label.clone()
+            system.name()
         }
     });
     let row = |name: &str, cells: Vec<String>| {
@@ -211,56 +223,47 @@ fn lifetime_text(lifetime: &LifetimeAnswer, currency: &str) -> String {
         row
     };
     let systems = &lifetime.systems;
-    let all = |figure: fn(&SystemLifetime) -> String| systems.iter().map(figure).collect();
+    let all = |figure: &dyn Fn(&SystemLifetime) -> String| systems.iter().map(figure).collect();
     let rows = vec![
-        row(
-            "Paid at the beginning",
-            all(|s| format!("{:.0}", s.capital)),
-        ),
-        row("  grant", all(|s| format!("{:.0}", s.grant))),
+        row("Paid at the beginning", all(&|s| told.money(s.capital))),
+        row("  grant", all(&|s| told.money(s.grant))),
         row(
             "Parts bought later",
-            all(|s| {
-                format!(
-                    "{:.0}",
-                    s.by_year
-                        .iter()
-                        .skip(1)
-                        .map(|year| year.capital)
-                        .sum::<f64>()
-                )
-            }),
+            all(&|s| told.money(s.by_year.iter().skip(1).map(|year| year.capital).sum())),
         ),
-        row("Present cost", all(|s| format!("{:.0}", s.present_cost))),
+        row("Present cost", all(&|s| told.money(s.present_cost))),
         row(
             "  against today",
-            all(|s| {
-                s.net_present_saving
-                    .map_or_else(|| "–".to_owned(), |saving| format!("{saving:+.0}"))
-            }),
+            all(&|s| or_dash(s.net_present_saving, |v| told.signed_money(v))),
         ),
         row(
             "Paid for itself",
-            all(|s| s.payback.clone().unwrap_or_else(|| "–".to_owned())),
+            all(&|s| {
+                s.payback
+                    .as_ref()
+                    .map_or("–".to_owned(), |said| told.said(said))
+            }),
         ),
         row(
             "Cost of a kWh of heat",
-            all(|s| or_dash(s.cost_per_kwh_heat, 3)),
+            all(&|s| or_dash(s.cost_per_kwh_heat, |v| told.money_to(v, 3))),
         ),
-        row(
-            "Carbon, t CO2e",
-            all(|s| format!("{:.1}", s.carbon_kg / 1000.0)),
-        ),
+        row("Carbon, t CO2e", all(&|s| told.n(s.carbon_kg / 1000.0, 1))),
     ];
     let table = plain_table_within(
         WIDTH,
-        std::iter::once(currency.to_owned()).chain(names),
+        std::iter::once(told.currency().to_owned()).chain(names),
         rows,
     );
     let cooling = systems.iter().filter(|system| system.each_year_its_own);
-    let cooling: String = cooling.filter_map(own_years).collect();
+    let cooling: String = cooling.filter_map(|s| own_years(s, told)).collect();
     format!(
-        "{}\n{table}{cooling}",
-        wrapped(&format!("Over the years: {}", lifetime.terms), "", "  ")
+        "{}\n{table}{cooling}\n{}",
+        wrapped(
+            &told.said(&format!("Over the years: {}", lifetime.terms)),
+            "",
+            "  "
+        ),
+        wrapped(&told.said(&lifetime.todays_next), "", "  ")
     )
 }

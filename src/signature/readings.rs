@@ -197,7 +197,7 @@ mod tests {
         Readings::read("readings.csv", text, &conversion())
     }
 
-    /// methods §7: 100 m³ at 39.3 MJ/m³ are 1116.382 kWh.
+    /// British gas bills, m³ × 1.02264 × 39.3 / 3.6: 100 m³ at 39.3 MJ/m³ are 1116.382 kWh.
     #[test]
     fn a_register_becomes_gross_energy() {
         let text = "# invented\ndate,register (m³),calorific value (MJ/m³)\n2023-01-01,1000,39.3\n2023-02-01,1100,39.3\n2023-02-15,1150,39.3\n";

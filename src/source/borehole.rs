@@ -1,20 +1,46 @@
-//! From the wall of a bore to the brine: the borehole resistance of a grouted single U-tube.
+//! From the wall of a bore to the brine: the borehole resistance of grouted U-tubes, one or two in a bore.
 
-use std::f64::consts::PI;
+use std::f64::consts::{PI, SQRT_2};
 
 use super::pipe::Pipe;
 
-/// A grouted bore with one U-tube.
+/// A grouted bore with its U-tubes.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct UTube {
     /// Radius of the bore, m.
     pub bore_radius_m: f64,
     /// The pipe, down and up.
     pub pipe: Pipe,
-    /// Distance between the middles of its two legs, m.
+    /// Distance between the middles of the two legs of a U-tube, m: both stand on a circle about the middle of the bore.
     pub spacing_m: f64,
     /// Conductivity of the grout, W/(m K).
     pub grout_w_per_m_k: f64,
+    /// How many.
+    pub count: UTubes,
+}
+
+/// U-tubes in a bore.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum UTubes {
+    /// One.
+    One,
+    /// Two crosswise, side by side in the circuit: the legs of each stand opposite each other.
+    Two,
+}
+
+impl UTubes {
+    /// Their number.
+    pub fn number(self) -> usize {
+        match self {
+            Self::One => 1,
+            Self::Two => 2,
+        }
+    }
+
+    /// Pipes in the bore.
+    fn legs(self) -> f64 {
+        2.0 * self.number() as f64
+    }
 }
 
 impl UTube {
@@ -23,30 +49,56 @@ impl UTube {
         (2.0 * bore_radius_m - 2.0 * pipe_outside_m) / 3.0 + pipe_outside_m
     }
 
-    /// Whether both legs are inside the bore and beside each other.
-    pub fn fits(&self) -> bool {
-        self.spacing_m >= self.pipe.outside_m
-            && self.spacing_m + self.pipe.outside_m <= 2.0 * self.bore_radius_m
+    /// Least and greatest distance of the two legs of a U-tube at which all are inside the bore and beside each other, m.
+    pub fn spacing_between_m(&self) -> (f64, f64) {
+        let nearest_m = match self.count {
+            UTubes::One => self.pipe.outside_m,
+            // The next leg on the circle is that of the other U-tube.
+            UTubes::Two => SQRT_2 * self.pipe.outside_m,
+        };
+        (nearest_m, 2.0 * self.bore_radius_m - self.pipe.outside_m)
     }
 
-    /// Local borehole resistance Rb, m K/W: from the mean of the fluid in both legs to the mean of the wall.
+    /// Whether all legs are inside the bore and beside each other.
+    pub fn fits(&self) -> bool {
+        let (nearest_m, widest_m) = self.spacing_between_m();
+        self.spacing_m >= nearest_m && self.spacing_m <= widest_m
+    }
+
+    /// Local borehole resistance Rb, m K/W: from the mean of the fluid in all legs to the mean of the wall.
     ///
-    /// First-order multipole solution in closed form: Hellström 1991; Javed and Spitler 2017,
-    /// doi 10.1016/j.apenergy.2016.11.079 \[from memory; held against pygfunction's multipoles\].
+    /// First-order multipole solution for N equal pipes evenly on a circle, all of one temperature. With x = (c/rb)², p = rp/c and c half the
+    /// spacing, `2πk N Rb = β + ln(rb^N/(N rp c^(N−1))) − σ ln(1 − x^N) − γp²B²/(1 + γp²C)`, where `B = (N−1)/2 − σN x^N/(1−x^N)`,
+    /// `C = (N²−1)/12 + σN² x^N/(1−x^N)²` and `γ = (1−β)/(1+β)`. It follows from the multipole method of Claesson and Hellström 2011, doi
+    /// 10.1080/10789669.2011.609927 \[from memory\], as only one multipole a pipe, the same in all, is left by the symmetry. N = 2 is the formula of
+    /// Hellström 1991; Javed and Spitler 2017, doi 10.1016/j.apenergy.2016.11.079 \[from memory\]. Both are held against pygfunction's multipoles.
     pub fn local_resistance(&self, ground_w_per_m_k: f64, fluid_to_pipe_m_k_per_w: f64) -> f64 {
         let m = self.multipole(ground_w_per_m_k, fluid_to_pipe_m_k_per_w);
-        let line = m.beta + (m.theta2 / (2.0 * m.theta1 * (1.0 - m.theta1_4).powf(m.sigma))).ln();
-        let above =
-            m.theta3.powi(2) * (1.0 - 4.0 * m.sigma * m.theta1_4 / (1.0 - m.theta1_4)).powi(2);
-        let below = (1.0 + m.beta) / (1.0 - m.beta)
-            + m.theta3.powi(2) * (1.0 + 16.0 * m.sigma * m.theta1_4 / (1.0 - m.theta1_4).powi(2));
-        (line - above / below) / (4.0 * PI * self.grout_w_per_m_k)
+        let n = self.count.legs();
+        let x_n = m.theta1.powf(2.0 * n);
+        // rp/c = 2 θ₃, rb/c = 1/θ₁.
+        let line =
+            m.beta + (m.theta2 / n).ln() - (n - 1.0) * m.theta1.ln() - m.sigma * (-x_n).ln_1p();
+        let across = (n - 1.0) / 2.0 - m.sigma * n * x_n / (1.0 - x_n);
+        let around = (n * n - 1.0) / 12.0 + m.sigma * n * n * x_n / (1.0 - x_n).powi(2);
+        let wide = (2.0 * m.theta3).powi(2);
+        let above = wide * across.powi(2);
+        let below = (1.0 + m.beta) / (1.0 - m.beta) + wide * around;
+        (line - above / below) / (2.0 * PI * self.grout_w_per_m_k * n)
     }
 
-    /// Internal resistance Ra between the two legs, m K/W; source as [`UTube::local_resistance`].
+    /// Internal resistance Ra between the legs that go down and those that go up, m K/W, for the heat of the whole bore.
+    ///
+    /// One U-tube: first-order multipoles, source as [`UTube::local_resistance`]. Two: line sources in the composite of grout and ground
+    /// (the same source, order zero), the legs of each U-tube opposite, so that legs of one direction stand next to each other; within 6 %
+    /// of the tenth order, which in a term that adds a few per cent to the resistance is enough.
     pub fn internal_resistance(&self, ground_w_per_m_k: f64, fluid_to_pipe_m_k_per_w: f64) -> f64 {
         let m = self.multipole(ground_w_per_m_k, fluid_to_pipe_m_k_per_w);
         let square = m.theta1.powi(2);
+        if self.count == UTubes::Two {
+            let line = m.beta - m.theta3.ln() + m.sigma * ((1.0 + square) / (1.0 - square)).ln();
+            return line / (2.0 * PI * self.grout_w_per_m_k);
+        }
         let line = m.beta
             + ((1.0 + square).powf(m.sigma) / (m.theta3 * (1.0 - square).powf(m.sigma))).ln();
         let above = m.theta3.powi(2) * (1.0 - m.theta1_4 + 4.0 * m.sigma * square).powi(2);
@@ -59,7 +111,7 @@ impl UTube {
     /// Effective borehole resistance, m K/W: from the mean of the brine entering and leaving the bore, heat passing between the
     /// legs included.
     ///
-    /// Hellström 1991 for the same heat on every metre: Rb + (H/(ṁ c))²/(3 Ra) \[from memory\].
+    /// Hellström 1991 for the same heat on every metre: Rb + (H/(ṁ c))²/(3 Ra) \[from memory\], with the flow ṁ c of the whole bore.
     pub fn effective_resistance(
         &self,
         ground_w_per_m_k: f64,
@@ -111,6 +163,7 @@ mod tests {
             pipe,
             spacing_m: UTube::even_spacing_m(0.065, 0.04),
             grout_w_per_m_k: 1.5,
+            count: UTubes::One,
         }
     }
 
@@ -159,5 +212,23 @@ mod tests {
             }
             .fits()
         );
+    }
+
+    /// Four pipes give their heat to the wall better than two of the same size, and less well than two without any resistance of grout.
+    #[test]
+    fn a_second_u_tube_lowers_the_resistance() {
+        let two = UTube {
+            count: UTubes::Two,
+            ..tube()
+        };
+        let one = tube().local_resistance(2.0, 0.09);
+        let both = two.local_resistance(2.0, 0.09);
+        assert!(both < 0.75 * one && both > 0.4 * one, "{one} {both}");
+        assert!(two.fits());
+        let near = UTube {
+            spacing_m: 0.05,
+            ..two
+        };
+        assert!(!near.fits());
     }
 }

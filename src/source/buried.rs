@@ -125,7 +125,7 @@ impl BuriedLoop {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::source::{AnnualSwing, Antifreeze, Bore, Brine, Filling, Pipe, Pump, Soil};
+    use crate::source::{AnnualSwing, Antifreeze, Bore, Brine, Filling, Pipe, Pump, Soil, UTubes};
 
     fn one_bore() -> LoopDesign {
         LoopDesign {
@@ -141,6 +141,7 @@ mod tests {
                     w_per_m_k: 1.5,
                     spacing_m: None,
                 },
+                u_tubes: UTubes::One,
             },
             pipe: Pipe {
                 outside_m: 0.04,

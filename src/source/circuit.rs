@@ -73,7 +73,7 @@ impl Circuit {
         self.flow_kg_per_s * self.properties().heat_capacity_kj_per_kg_k
     }
 
-    /// Heat capacity flow in one of the ways, W/K.
+    /// Heat capacity flow in one of equal ways side by side, W/K.
     pub fn way_w_per_k(&self, ways: usize) -> f64 {
         self.capacity_kw_per_k() * WATTS / ways as f64
     }

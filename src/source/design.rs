@@ -1,6 +1,6 @@
 //! A loop as it is described: where bores or trenches lie, what is in them, the ground about them; and the loop made of it.
 
-use super::borehole::UTube;
+use super::borehole::{UTube, UTubes};
 use super::bores::{self, Bore, total_depth_m};
 use super::brine::Brine;
 use super::buried::{BuriedLoop, WATTS};
@@ -14,12 +14,14 @@ use super::undisturbed::{AnnualSwing, undisturbed_c};
 /// What lies in the ground.
 #[derive(Debug, Clone, PartialEq)]
 pub enum Layout {
-    /// Bores, each with one U-tube, side by side in the circuit.
+    /// Bores, side by side in the circuit.
     Bores {
         /// The bores; not empty.
         bores: Vec<Bore>,
         /// What is in them.
         filling: Filling,
+        /// U-tubes in each.
+        u_tubes: UTubes,
     },
     /// Trenches, side by side in the circuit; the pipes of one follow each other.
     Trenches {
@@ -77,7 +79,11 @@ impl Layout {
     /// The same layout with every bore or trench longer by a factor.
     fn stretched(&self, factor: f64) -> Self {
         match self {
-            Self::Bores { bores, filling } => Self::Bores {
+            Self::Bores {
+                bores,
+                filling,
+                u_tubes,
+            } => Self::Bores {
                 bores: bores
                     .iter()
                     .map(|bore| Bore {
@@ -86,6 +92,7 @@ impl Layout {
                     })
                     .collect(),
                 filling: *filling,
+                u_tubes: *u_tubes,
             },
             Self::Trenches { trenches } => Self::Trenches {
                 trenches: trenches
@@ -102,8 +109,8 @@ impl Layout {
     /// Ways side by side in the circuit, and the longest of them, m.
     fn ways(&self) -> (usize, f64) {
         match self {
-            Self::Bores { bores, .. } => (
-                bores.len(),
+            Self::Bores { bores, u_tubes, .. } => (
+                bores.len() * u_tubes.number(),
                 2.0 * bores.iter().map(|bore| bore.depth_m).fold(0.0, f64::max),
             ),
             Self::Trenches { trenches } => (
@@ -177,7 +184,7 @@ impl LoopDesign {
             self.pump,
         );
         let response = Response::fit(&self.wall_response(&Response::times_h()))?;
-        let resistance_m_k_per_w = self.resistance(&circuit, ways);
+        let resistance_m_k_per_w = self.resistance(&circuit);
         let length_m = self.layout.length_m();
         let wall_to_machine = WATTS / length_m * (response.first_hour() + resistance_m_k_per_w);
         // The mean of the brine lies half its warming below what enters the machine. What comes out of the ground is never
@@ -198,7 +205,7 @@ impl LoopDesign {
     }
 
     /// From wall to brine, m K/W, the mean over the length.
-    fn resistance(&self, circuit: &Circuit, ways: usize) -> f64 {
+    fn resistance(&self, circuit: &Circuit) -> f64 {
         let fluid = circuit.in_pipe.resistance_m_k_per_w;
         match &self.layout {
             Layout::Bores {
@@ -208,15 +215,16 @@ impl LoopDesign {
             Layout::Bores {
                 bores,
                 filling: Filling::Grout { .. },
+                ..
             } => {
-                let way_w_per_k = circuit.way_w_per_k(ways);
+                let bore_w_per_k = circuit.way_w_per_k(bores.len());
                 let weighted: f64 = bores
                     .iter()
                     .filter_map(|bore| Some((bore, self.u_tube(bore)?)))
                     .map(|(bore, tube)| {
                         let ground = self.soil.conductivity_w_per_m_k;
                         bore.depth_m
-                            * tube.effective_resistance(ground, fluid, bore.depth_m, way_w_per_k)
+                            * tube.effective_resistance(ground, fluid, bore.depth_m, bore_w_per_k)
                     })
                     .sum();
                 weighted / total_depth_m(bores)
@@ -225,7 +233,7 @@ impl LoopDesign {
         }
     }
 
-    /// The U-tube of a bore; nothing where only its resistance is known.
+    /// The U-tubes of a bore; nothing where only its resistance is known.
     pub fn u_tube(&self, bore: &Bore) -> Option<UTube> {
         match &self.layout {
             Layout::Bores {
@@ -234,8 +242,10 @@ impl LoopDesign {
                         w_per_m_k,
                         spacing_m,
                     },
+                u_tubes,
                 ..
             } => Some(UTube {
+                count: *u_tubes,
                 bore_radius_m: bore.radius_m,
                 pipe: self.pipe,
                 spacing_m: spacing_m

@@ -45,7 +45,7 @@ impl FiniteLine {
 
     /// Response along `felt`, in units of q′/(2πk), at rising times (s), to `source` at a distance (m): the mean over the length.
     ///
-    /// Claesson and Javed 2011 for equal lines (methods §4), in the form for unequal ones of Cimmino and Bernier 2014
+    /// Claesson and Javed 2011 for equal lines, in the form for unequal ones of Cimmino and Bernier 2014
     /// (doi 10.1016/j.ijheatmasstransfer.2013.10.037):
     /// `h = 1/(2 H₂) ∫_{1/√(4αt)}^∞ exp(−d²s²)/s² Σ ± i(·s) ds`, the surface held at its temperature by the image line above it.
     /// The integral grows panel by panel as time goes on, so that a whole curve costs little more than its last point.
@@ -154,7 +154,7 @@ mod tests {
 
     const YEAR_S: f64 = 8760.0 * 3600.0;
 
-    /// methods §4 \[computed\]: H 100 m, D 4 m, r 0.075 m, α 1e-6 m²/s.
+    /// The integral of Claesson and Javed 2011, computed with general-purpose libraries: H 100 m, D 4 m, r 0.075 m, α 1e-6 m²/s.
     #[test]
     fn one_bore_meets_the_published_values() {
         let line = Vertical {

@@ -21,7 +21,7 @@ mod trench;
 mod undisturbed;
 mod water;
 
-pub use borehole::UTube;
+pub use borehole::{UTube, UTubes};
 pub use bores::{Bore, total_depth_m};
 pub use brine::{Antifreeze, Brine, BrineProperties, GREATEST_SHARE};
 pub use buried::{BuriedLoop, RECHARGE_DAYS};
@@ -70,6 +70,7 @@ pub struct GroundLoop {
 
 impl Source {
     /// The offer of an hour with an outdoor temperature (°C), after what the ground remembers.
+    #[inline]
     pub fn offer(&self, hour: usize, outdoor_c: f64, memory: &Memory) -> Offer {
         match self {
             Self::OutdoorAir => Offer {

@@ -26,7 +26,7 @@ pub struct SoilClass {
 
 /// Specific extraction that bores were once sized by, W/m: least and greatest.
 ///
-/// VDI 4640-2:2001, superseded in 2019 (methods §4): for up to 30 kW and bores of 40 to 100 m.
+/// VDI 4640-2:2001, superseded in 2019: for up to 30 kW and bores of 40 to 100 m.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct RuleOfThumb {
     /// At 1800 full-load hours a year.

@@ -5,7 +5,7 @@ use std::f64::consts::{PI, TAU};
 /// Hours in the year of the annual wave.
 pub const HOURS_PER_YEAR: f64 = 8766.0;
 
-/// Diffusivity of moist loam, the usual soil over a trench: 0.5e-6 m²/s (methods §4; common practice).
+/// Diffusivity of moist loam, the usual soil over a trench: 0.5e-6 m²/s (common practice, no source).
 pub const TRENCH_DIFFUSIVITY_M2_PER_S: f64 = 0.5e-6;
 
 /// The year's wave of a temperature: mean, swing and when it is coldest.
@@ -53,7 +53,7 @@ impl AnnualSwing {
 
 /// Temperature of undisturbed ground at a depth (m, ≥ 0), °C, in an hour of the axis.
 ///
-/// Kusuda and Achenbach 1965, as in methods §4 \[from memory\]:
+/// Kusuda and Achenbach 1965 \[from memory\]:
 /// `T = Tm − A exp(−z √(π/(365 α))) cos(2π/365 (t − t0 − z/2 √(365/(π α))))` with α in m²/day and t in days, here written in
 /// hours. The diffusivity is in m²/s.
 pub fn undisturbed_c(air: &AnnualSwing, depth_m: f64, diffusivity_m2_per_s: f64, hour: f64) -> f64 {
@@ -74,7 +74,7 @@ mod tests {
         coldest_hour: 480.0,
     };
 
-    /// methods §4 \[computed\]: amplitude left at 1/2/5 m for α = 0.5e-6 m²/s: 0.640/0.410/0.107.
+    /// exp(−z √(π/(365 α))) by hand: amplitude left at 1/2/5 m for α = 0.5e-6 m²/s: 0.640/0.410/0.107.
     #[test]
     fn the_wave_is_damped_with_depth() {
         for (depth, left) in [(1.0, 0.640), (2.0, 0.410), (5.0, 0.107)] {

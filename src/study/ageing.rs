@@ -25,6 +25,15 @@ pub struct Aged {
     pub moved: bool,
 }
 
+/// How the past of a loop of another length is made.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(super) enum Ageing {
+    /// Every year before the one that is shown is run.
+    YearByYear,
+    /// By the geometric sum of equal years, which takes two of them whatever the age; the draw a year is known for is left as it was.
+    Settled,
+}
+
 impl Aged {
     /// The memory for a system that draws a number of kWh a year: the ground is linear, so the history is scaled.
     pub fn for_draw(&self, drawn_kwh: f64) -> Memory {

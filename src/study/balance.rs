@@ -73,6 +73,25 @@ fn load_kw(system: &System, indoor_c: f64, outdoor_c: f64) -> f64 {
     fabric.design_load_kw(indoor_c, outdoor_c).max(0.0)
 }
 
+/// Whether a machine stops carrying the load at its balance point because the flow that the emitters need there passes its highest.
+pub fn limited_by_flow(
+    system: &System,
+    machine: &MachineSystem,
+    indoor_c: f64,
+    point: BalancePoint,
+    ground: Memory,
+) -> bool {
+    /// The far side of the point, K: well beyond what it is solved to.
+    const BEYOND_K: f64 = 0.01;
+    let Some(at_c) = point.c() else { return false };
+    let outdoor_c = at_c - BEYOND_K;
+    let emitters = &system.home.emitters;
+    let load_kw = load_kw(system, indoor_c, outdoor_c);
+    let flow_c = emitters.at_load(load_kw, indoor_c).flow_c + emitters.header_k();
+    let cold = cold_side(machine, outdoor_c, &ground);
+    flow_c > machine.machine.limits().highest_flow_at(cold.open_c)
+}
+
 /// Least output without going on and off and greatest output, kW, at an outdoor temperature and the flow temperature that
 /// the emitters need for the steady loss there; ground and water at their coldest.
 pub fn output_range_kw(
@@ -141,6 +160,7 @@ pub fn balance_point(
         .configure(|state| state.param(low_c).max_iters(MAX_ITERATIONS))
         .run()
         .ok()?;
-    let at_c = *solved.state().get_best_param()?;
-    Some(BalancePoint::At(at_c))
+    let state = solved.state();
+    let &at_c = state.get_best_param()?;
+    (state.get_iter() < MAX_ITERATIONS).then_some(BalancePoint::At(at_c))
 }

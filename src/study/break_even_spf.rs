@@ -37,7 +37,7 @@ pub struct BreakEvenSpf {
     pub whole_bill: f64,
 }
 
-/// Break-even SPF for the same heat, methods §7.
+/// Break-even SPF for the same heat: equal bills, by hand.
 ///
 /// Unit rates: `pe η / pf`. Whole bill: `pe H / (F pf + S + Eb pe)` with `H = F η`. Nothing where the boiler costs nothing.
 ///

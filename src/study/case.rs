@@ -6,7 +6,7 @@ use std::sync::Arc;
 use chrono_tz::Tz;
 
 use super::act::doubt_sheet;
-use super::ageing::Aged;
+use super::ageing::{Aged, Ageing, settled};
 use super::fuel_carbon::{Both, CarbonOfFuel};
 use super::lever::Lever;
 use super::outcome::{Costs, Outcome, YearOutcome};
@@ -204,6 +204,22 @@ impl Case {
     /// # Errors
     /// A value that the lever cannot take; the case is then as it was.
     pub fn apply(&mut self, choice: usize, moves: &[(Lever, f64)]) -> Result<(), Problems> {
+        let moves: Vec<_> = moves
+            .iter()
+            .map(|&(lever, value)| (lever, choice, value))
+            .collect();
+        self.apply_each(&moves, Ageing::YearByYear)
+    }
+
+    /// Moves levers, each of the choice beside it, in one go.
+    ///
+    /// # Errors
+    /// As [`Case::apply`].
+    pub(super) fn apply_each(
+        &mut self,
+        moves: &[(Lever, usize, f64)],
+        ageing: Ageing,
+    ) -> Result<(), Problems> {
         let before = match &self.moved {
             Some(moved) => Arc::clone(&moved.before),
             None => self.contenders.clone().into(),
@@ -219,7 +235,7 @@ impl Case {
             .map_or_else(Vec::new, |moved| moved.values);
         let kept = values.clone();
         let mut problems = Problems::new();
-        for &(lever, value) in moves {
+        for &(lever, choice, value) in moves {
             problems.take(lever.check(value, &brief, choice));
             values.retain(|(moved, of, _)| (*moved, *of) != (lever, choice));
             if lever.now(&brief, choice) != Some(value) {
@@ -255,9 +271,15 @@ impl Case {
             .iter()
             .filter(|(lever, _, _)| *lever == Lever::LoopLength)
         {
-            let year = contenders[*of].shown_year;
-            contenders[*of].aged = brief.aged(&contenders[*of], year);
-            contenders[*of].life = brief.life(&contenders[*of]);
+            let contender = &mut contenders[*of];
+            let year = contender.shown_year;
+            contender.aged = match (ageing, contender.aged) {
+                (Ageing::Settled, Some(aged)) => {
+                    settled(&brief, contender, year).map(|memory| Aged { memory, ..aged })
+                }
+                _ => brief.aged(contender, year),
+            };
+            contender.life = brief.life(contender);
         }
         self.contenders = contenders;
         self.moved = (!values.is_empty()).then_some(Moved { before, values });

@@ -20,23 +20,54 @@ pub struct DesignPoint {
     pub output_kw: f64,
     /// Greatest heat of the emitters at their greatest permitted flow, kW.
     pub emitters_kw: f64,
+    /// Highest flow of the machine there, °C; absent where there is no heat pump.
+    pub highest_flow_c: Option<f64>,
     /// Backup, kW; absent where there is no heat pump.
     pub backup_kw: Option<f64>,
     /// Water flow of the emitters, L/min.
     pub water_l_per_min: f64,
 }
 
+/// What limits the heat at a design point.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum DesignLimit {
+    /// The emitters at their greatest permitted flow.
+    Emitters,
+    /// The heater's highest flow.
+    HighestFlow,
+    /// The heater's output.
+    Output,
+}
+
 impl DesignPoint {
+    /// What limits the heat that is carried without backup.
+    pub fn limit(&self) -> DesignLimit {
+        if self.emitters_kw < self.output_kw {
+            DesignLimit::Emitters
+        } else if self
+            .highest_flow_c
+            .is_some_and(|highest_c| self.heater_flow_c > highest_c)
+        {
+            DesignLimit::HighestFlow
+        } else {
+            DesignLimit::Output
+        }
+    }
+
     /// Heat that is carried without backup, kW.
     pub fn carried_kw(&self) -> f64 {
         self.output_kw.min(self.emitters_kw)
     }
 
+    /// Heat that heater and backup carry together, kW.
+    pub fn carried_with_backup_kw(&self) -> f64 {
+        (self.output_kw + self.backup_kw.unwrap_or(0.0)).min(self.emitters_kw)
+    }
+
     /// Whether heater and backup together carry the load; a watt is rounding.
     pub fn covered(&self) -> bool {
         const ROUNDING_KW: f64 = 1e-3;
-        let with_backup = self.output_kw + self.backup_kw.unwrap_or(0.0);
-        with_backup.min(self.emitters_kw) >= self.load_kw - ROUNDING_KW
+        self.carried_with_backup_kw() >= self.load_kw - ROUNDING_KW
     }
 }
 
@@ -81,6 +112,10 @@ pub fn design_point(
         heater_flow_c,
         output_kw,
         emitters_kw: emitters.greatest_output_kw(),
+        highest_flow_c: system.heating.machine().map(|machine| {
+            let cold = cold_side(machine, outdoor_c, &ground);
+            machine.machine.limits().highest_flow_at(cold.open_c)
+        }),
         backup_kw,
         water_l_per_min: water_flow_l_per_min(load_kw, spread_k),
     }

@@ -32,11 +32,11 @@ mod two_levers;
 mod weather_years;
 
 pub use ageing::{Aged, SHOWN_YEAR};
-pub use balance::{BalancePoint, balance_point, output_range_kw};
+pub use balance::{BalancePoint, balance_point, limited_by_flow, output_range_kw};
 pub use break_even::{BreakEven, Crossing, break_even};
 pub use break_even_spf::{Applies, BreakEvenSpf, Prices, break_even_spf};
 pub use case::{Account, Beside, Case, Contender};
-pub use design::{DesignPoint, design_point};
+pub use design::{DesignLimit, DesignPoint, design_point};
 pub use emitter_sizes::{EmitterSize, emitter_sizes};
 pub use lever::Lever;
 pub use loop_life::{BrineHour, LoopYear, NoShortest, ShortestLoop, loop_life, shortest_loop};

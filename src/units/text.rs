@@ -160,6 +160,14 @@ fn fold(symbol: &str) -> String {
         .collect()
 }
 
+/// A figure that somebody set, with the decimals it was given: "20", "20.5"; a conversion leaves two at most.
+pub fn as_set(value: f64) -> String {
+    /// Hundredths tell every figure that people set.
+    const HUNDREDTHS: f64 = 100.0;
+    // Adding nothing makes −0 a plain 0.
+    format!("{}", (value * HUNDREDTHS).round() / HUNDREDTHS + 0.0)
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -184,6 +192,13 @@ mod tests {
         for text in ["", "kWh", "-", "1e999 kW", "..", "NaN W", "inf W"] {
             assert_eq!(split_number(text), None, "{text}");
         }
+    }
+
+    /// 69 °F are 20.5556 °C.
+    #[test]
+    fn what_was_set_keeps_its_decimals() {
+        let written = [20.0, 20.5, 0.1 + 0.2, (69.0 - 32.0) / 1.8, -0.001].map(as_set);
+        assert_eq!(written, ["20", "20.5", "0.3", "20.56", "0"]);
     }
 
     proptest! {

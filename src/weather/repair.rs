@@ -1,5 +1,7 @@
 //! Filling gaps by a stated policy.
 
+use std::collections::BTreeMap;
+
 use super::hours::Hours;
 use super::options::RepairPolicy;
 use super::words::count;
@@ -27,22 +29,13 @@ pub(super) fn repair(
 ) -> Result<Repaired, Problems> {
     let gaps = gaps(&hours.outdoor_c);
     let mut problems = Problems::new();
+    let mut filled: BTreeMap<(Severity, &str), Vec<(usize, usize)>> = BTreeMap::new();
     for &(from, to) in &gaps {
         let length = to - from;
-        let at = hours.place(from);
-        let what = if length == 1 {
-            format!("1 hour without a temperature, {}", hours.local(from))
-        } else {
-            format!(
-                "{length} hours without a temperature, {} to {}",
-                hours.local(from),
-                hours.local(to - 1)
-            )
-        };
         if length > policy.neighbour_hours && !policy.fill_longer {
             problems.push(Problem::new(
-                at,
-                what,
+                hours.place(from),
+                gap_in_words(hours, (from, to)),
                 format!("gaps up to {}", count(policy.neighbour_hours, "hour")),
                 "find the readings, leave the year out, or allow longer gaps to be filled",
             ));
@@ -58,7 +51,10 @@ pub(super) fn repair(
         } else {
             Severity::Note
         };
-        findings.push(Finding::new(severity, what, done).at(&at));
+        filled.entry((severity, done)).or_default().push((from, to));
+    }
+    for ((severity, done), gaps) in filled {
+        findings.extend(told(hours, &gaps, severity, done));
     }
     let flags: Vec<bool> = hours.outdoor_c.iter().map(|c| c.is_nan()).collect();
     problems.or(())?;
@@ -102,6 +98,48 @@ pub(super) fn repair(
         missing_hours: flags.iter().filter(|&&flag| flag).count(),
         flags,
     })
+}
+
+/// Gaps that were filled alike: each told while they are few, else all of them as one.
+fn told(hours: &Hours, gaps: &[(usize, usize)], severity: Severity, done: &str) -> Vec<Finding> {
+    /// More gaps than this nobody reads one by one.
+    const FEW: usize = 5;
+    let at = |from| hours.place(from);
+    if gaps.len() <= FEW {
+        let each = gaps
+            .iter()
+            .map(|&gap| Finding::new(severity, gap_in_words(hours, gap), done).at(&at(gap.0)));
+        return each.collect();
+    }
+    let lengths = gaps.iter().map(|(from, to)| to - from);
+    let longest = lengths.clone().max().unwrap_or(0);
+    let (first, last) = (gaps[0].0, gaps[gaps.len() - 1].0);
+    let span = format!(
+        "the first {}, the last {}",
+        hours.local(first),
+        hours.local(last)
+    );
+    let what = if longest == 1 {
+        format!("{} single hours without a temperature, {span}", gaps.len())
+    } else {
+        format!(
+            "{} gaps of up to {longest} hours without a temperature, {} hours in all, {span}",
+            gaps.len(),
+            lengths.sum::<usize>()
+        )
+    };
+    vec![Finding::new(severity, what, done).at(&at(first))]
+}
+
+fn gap_in_words(hours: &Hours, (from, to): (usize, usize)) -> String {
+    match to - from {
+        1 => format!("1 hour without a temperature, {}", hours.local(from)),
+        length => format!(
+            "{length} hours without a temperature, {} to {}",
+            hours.local(from),
+            hours.local(to - 1)
+        ),
+    }
 }
 
 /// Runs of missing hours, each from its first to one past its last.

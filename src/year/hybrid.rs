@@ -1,8 +1,11 @@
 //! An hour of a home that keeps a boiler beside its machine.
 
+use super::boiler::{account_boiler, boiler_hour};
+use super::machine::heat_pump_hour;
+use super::rooms::Rooms;
 use super::row::Row;
 use super::site::Plan;
-use super::step::{Probe, Rooms, Unwatched, boiler_hour, charge_energy, heat_pump_hour};
+use super::step::{Probe, Unwatched, charge_energy};
 use super::system::HybridSystem;
 use crate::heater::{Effort, Side};
 use crate::heatpump::ColdSide;
@@ -61,9 +64,12 @@ fn by_machine_hour<P: Probe>(
     row: &mut Row,
     probe: &mut P,
 ) {
-    let HybridSystem { machine, .. } = hybrid;
-    heat_pump_hour(
+    let HybridSystem {
+        machine, boiler, ..
+    } = hybrid;
+    let lacking_kwh = heat_pump_hour(
         machine,
+        machine.backup_kw + boiler.output_kw,
         asked.home,
         asked.cold,
         asked.water,
@@ -76,35 +82,26 @@ fn by_machine_hour<P: Probe>(
         .hot_water
         .as_ref()
         .is_some_and(|water| water.store.is_some());
-    let rooms_lack_kwh = asked.rooms.least_kwh - row.machine_space_kwh - row.backup_kwh;
-    let water_kwh = if has_store {
-        0.0
-    } else {
-        asked.water.wanted_kwh
-    };
-    if rooms_lack_kwh > 0.0 || water_kwh > 0.0 {
-        let rooms = Rooms {
-            wanted_kw: rooms_lack_kwh.max(0.0),
-            ..*asked.rooms
-        };
-        let water = StoreStep {
-            wanted_kwh: water_kwh,
-            ..*asked.water
-        };
-        let flows = (row.space_flow_c, row.space_return_c);
-        boiler_hour(
-            &hybrid.boiler,
-            hybrid.fixed_flow_c,
-            asked.home,
-            &water,
-            &rooms,
-            row,
-        );
-        // The ledger shows the water of the machine where both run.
-        if flows.0.is_some() {
-            (row.space_flow_c, row.space_return_c) = flows;
-        }
+    if !has_store {
+        row.heater_water_kwh = asked.water.wanted_kwh.min(boiler.output_kw);
+        row.fuel_kwh = row.heater_water_kwh / boiler.water_efficiency(has_store);
     }
+    // The boiler stands behind the machine: the water that the machine has warmed, or that comes back where it stands, is what
+    // enters it.
+    if lacking_kwh > 0.0 {
+        let rooms = asked.rooms;
+        let enters_c = row
+            .machine_flow_c
+            .or(row.space_return_c)
+            .unwrap_or_else(|| {
+                let emitters = &asked.home.emitters;
+                let warm = emitters.supply(lacking_kwh, rooms.room_c, rooms.outdoor_c);
+                warm.water.return_c
+            });
+        row.heater_space_kwh = lacking_kwh.min(boiler.output_kw - row.heater_water_kwh);
+        row.fuel_kwh += row.heater_space_kwh / boiler.gross_efficiency(enters_c);
+    }
+    account_boiler(boiler, row);
 }
 
 /// The boiler alone; the machine rests.

@@ -5,14 +5,19 @@
 //! each hour, and hands each [`Row`] to a [`Sink`]. A run can be stopped and resumed at any hour: two half years with
 //! the state carried over are the year.
 
+mod boiler;
 mod hybrid;
 mod ledger;
+mod machine;
 mod metered;
+mod rooms;
 mod row;
 mod site;
 mod step;
 mod system;
 mod totals;
+mod warm_side;
+mod water;
 
 pub use ledger::Ledger;
 pub use metered::{Household, Metered};

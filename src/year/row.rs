@@ -36,6 +36,7 @@ macro_rules! ledger {
 
         impl Sums {
             /// Adds an hour.
+            #[inline]
             pub fn add(&mut self, row: &Row) {
                 $(self.$sum += row.$sum;)*
             }
@@ -223,6 +224,7 @@ macro_rules! derived {
             }
 
             /// All electricity, kWh.
+            #[inline]
             pub fn electricity_kwh(&self) -> f64 {
                 self.machine_electricity_kwh()
                     + self.source_side_kwh

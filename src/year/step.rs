@@ -1,25 +1,20 @@
 //! One hour: weather, demand, offer, machine, backup, row.
 
-use crate::fault::{self, Fault};
 use std::ops::Range;
 
 use super::Sink;
+use super::boiler::boiler_hour;
 use super::hybrid::{Asked, hybrid_hour};
+use super::machine::{ground_hour, heat_pump_hour};
+use super::rooms::Rooms;
 use super::row::{Flags, Row};
 use super::site::{Plan, Site};
-use super::system::{Heating, MachineSystem, State, System};
-use crate::heater::Boiler;
-use crate::heatpump::{ColdSide, Delivered, Duty, running_spread_k};
-use crate::home::{Control, Home, StoreStep, Tapped, WaterTemperatures};
+use super::system::{Heating, State, System};
+use super::water::{draw, store_hour};
+use crate::heatpump::{ColdSide, Delivered, Duty};
 
 /// Rooms this much below the set point at the end of an hour are short of heat, K. A choice of ours: about what people notice.
 const SHORT_K: f64 = 1.0;
-
-/// A heat that is short by less than this share is short by rounding only.
-const ROUNDING: f64 = 1e-9;
-
-/// Less than this part of an hour is not worth a start, h.
-const LEAST_RUN_H: f64 = 1e-6;
 
 /// The two duties of an hour: each has its own flow temperature and so its own COP.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -52,8 +47,9 @@ pub fn run<S: Sink>(
     state: &mut State,
     sink: &mut S,
 ) {
+    let mut row = Row::default();
     for hour in hours {
-        let row = step(hour, site, system, plan, state, &mut Unwatched);
+        fill(hour, site, system, plan, state, &mut Unwatched, &mut row);
         sink.take(hour, &row);
     }
 }
@@ -69,6 +65,22 @@ pub fn step<P: Probe>(
     state: &mut State,
     probe: &mut P,
 ) -> Row {
+    let mut row = Row::default();
+    fill(hour, site, system, plan, state, probe, &mut row);
+    row
+}
+
+/// Steps one hour into a row, whatever it held.
+#[inline]
+fn fill<P: Probe>(
+    hour: usize,
+    site: &Site,
+    system: &System,
+    plan: &Plan,
+    state: &mut State,
+    probe: &mut P,
+    row: &mut Row,
+) {
     let home = &system.home;
     let outdoor_c = site.outdoor_c[hour];
     let set_point_c = plan.set_point_c[hour];
@@ -78,47 +90,21 @@ pub fn step<P: Probe>(
         .map_or(0.0, |column| column[hour]);
     let gains_kw = home.fabric.gains_kw(sun_w_per_m2);
 
-    let mut row = Row {
-        outdoor_c,
-        set_point_c,
-        gains_kwh: gains_kw,
-        electricity_price: plan.electricity.price[hour],
-        fuel_price: plan.fuel.as_ref().map(|fuel| fuel.price[hour]),
-        flags: Flags::WEATHER_REPAIRED.when(site.repaired[hour]),
-        ..Row::default()
-    };
+    *row = Row::default();
+    row.outdoor_c = outdoor_c;
+    row.set_point_c = set_point_c;
+    row.gains_kwh = gains_kw;
+    row.electricity_price = plan.electricity.price[hour];
+    row.fuel_price = plan.fuel.as_ref().map(|fuel| fuel.price[hour]);
+    row.flags = Flags::WEATHER_REPAIRED.when(site.repaired[hour]);
 
     // What is asked: hot water by the clock, the rooms by their set point.
     let shift_k = plan
         .store_shift_k
         .as_ref()
         .map_or(0.0, |column| column[hour]);
-    let water = draw(home, site, hour, shift_k, state, &mut row);
-    let reach = |target_c| {
-        home.fabric
-            .heat_to_reach_kwh(state.room_c, target_c, outdoor_c, gains_kw)
-    };
-    let mut wanted_kw = match &plan.recovery {
-        Some(recovery) if recovery.at_the_time => reach(set_point_c),
-        _ => home
-            .fabric
-            .heat_wanted_kw(state.room_c, set_point_c, outdoor_c, gains_kw),
-    };
-    if let Some(recovery) = &plan.recovery {
-        let under_way = &mut state.recovering;
-        let fabric = &home.fabric;
-        let warm_up_kw =
-            recovery.heat_kw(hour, fabric, state.room_c, outdoor_c, gains_kw, under_way);
-        row.flags |= Flags::RECOVERY.when(warm_up_kw > 0.0);
-        wanted_kw = wanted_kw.max(warm_up_kw);
-    }
-    row.space_wanted_kwh = wanted_kw;
-    let rooms = Rooms {
-        wanted_kw: wanted_kw.min(home.emitters.greatest_output_kw()),
-        least_kwh: reach(plan.backup_below_c[hour]),
-        room_c: state.room_c,
-        outdoor_c,
-    };
+    let water = draw(home, site, hour, shift_k, state, row);
+    let rooms = Rooms::ask(hour, home, plan, gains_kw, state, row);
 
     // What answers.
     match &system.heating {
@@ -129,14 +115,23 @@ pub fn step<P: Probe>(
                 k_per_kw: offer.k_per_kw,
                 relative_humidity: site.relative_humidity.as_ref().map(|column| column[hour]),
             };
-            heat_pump_hour(system, home, &cold, &water, &rooms, &mut row, probe);
-            ground_hour(hour, system, state, &mut row);
+            heat_pump_hour(
+                system,
+                system.backup_kw,
+                home,
+                &cold,
+                &water,
+                &rooms,
+                row,
+                probe,
+            );
+            ground_hour(hour, system, state, row);
         }
         Heating::Boiler {
             boiler,
             fixed_flow_c,
         } => {
-            boiler_hour(boiler, *fixed_flow_c, home, &water, &rooms, &mut row);
+            boiler_hour(boiler, *fixed_flow_c, home, &water, &rooms, row);
         }
         Heating::Hybrid(hybrid) => {
             let offer = hybrid.machine.source.offer(hour, outdoor_c, &state.ground);
@@ -153,8 +148,8 @@ pub fn step<P: Probe>(
                 water: &water,
                 rooms: &rooms,
             };
-            hybrid_hour(hybrid, &asked, &mut row, probe);
-            ground_hour(hour, &hybrid.machine, state, &mut row);
+            hybrid_hour(hybrid, &asked, row, probe);
+            ground_hour(hour, &hybrid.machine, state, row);
         }
         Heating::DirectElectric { output_kw } => {
             row.heater_water_kwh = water.wanted_kwh.min(*output_kw);
@@ -164,7 +159,7 @@ pub fn step<P: Probe>(
     }
 
     // What it did to store and rooms.
-    store_hour(home, &water, state, &mut row);
+    store_hour(home, &water, state, row);
     let room = home.fabric.step(
         state.room_c,
         row.space_heat_kwh(),
@@ -184,11 +179,11 @@ pub fn step<P: Probe>(
     row.flags |= Flags::SHORT.when(room.end_c < asked_c - SHORT_K);
 
     // What it cost.
-    charge_energy(plan, hour, &mut row);
-    row
+    charge_energy(plan, hour, row);
 }
 
 /// Cost and carbon of an hour's energy at the plan's signals.
+#[inline]
 pub(super) fn charge_energy(plan: &Plan, hour: usize, row: &mut Row) {
     let electricity_kwh = row.electricity_kwh();
     let fuel = plan.fuel.as_ref();
@@ -196,322 +191,4 @@ pub(super) fn charge_energy(plan: &Plan, hour: usize, row: &mut Row) {
         + fuel.map_or(0.0, |fuel| fuel.cost(hour, row.fuel_kwh));
     row.carbon_kg = plan.electricity.carbon(hour, electricity_kwh)
         + fuel.map_or(0.0, |fuel| fuel.carbon(hour, row.fuel_kwh));
-}
-
-/// What the rooms want in an hour.
-#[derive(Clone, Copy)]
-pub(super) struct Rooms {
-    /// Heat that holds the set point or leads back to it, as far as the emitters can carry it, kW.
-    pub wanted_kw: f64,
-    /// Heat that keeps them above the point where backup helps, kWh.
-    pub least_kwh: f64,
-    /// Their temperature at the beginning of the hour, °C.
-    pub room_c: f64,
-    /// Outdoor air, °C: what a compensation line follows.
-    pub outdoor_c: f64,
-}
-
-/// Draws an hour's hot water and says what its heater must bring.
-fn draw(
-    home: &Home,
-    site: &Site,
-    hour: usize,
-    shift_k: f64,
-    state: &State,
-    row: &mut Row,
-) -> StoreStep {
-    let clock = &site.civil[hour];
-    let month0 = usize::from(site.month0[hour]);
-    let mut step = StoreStep {
-        before_c: state.store.mean_c,
-        drawn_kwh: 0.0,
-        lost_kwh: 0.0,
-        wanted_kwh: 0.0,
-        target_c: 0.0,
-        machine_target_c: 0.0,
-        too_cool: false,
-        hygiene: false,
-    };
-    let Some(water) = &home.hot_water else {
-        return step;
-    };
-    let tapped = Tapped {
-        kwh: water.drawn_kwh(month0, clock.hour),
-        draw_c: water.draw_c,
-        cold_c: water.cold_c[month0 % 12],
-    };
-    match &water.store {
-        Some(store) => step = store.shifted(shift_k).step(&state.store, &tapped, clock),
-        None => {
-            step.drawn_kwh = tapped.kwh;
-            step.wanted_kwh = tapped.kwh;
-        }
-    }
-    if fault::on(Fault::HotWaterAllDay) {
-        step.wanted_kwh = water.mean_daily_kwh() / 24.0 + step.lost_kwh;
-    }
-    row.water_drawn_kwh = step.drawn_kwh;
-    row.water_missing_kwh = tapped.kwh - step.drawn_kwh;
-    row.store_loss_kwh = step.lost_kwh;
-    row.flags |= Flags::WATER_SHORT.when(step.too_cool) | Flags::HYGIENE.when(step.hygiene);
-    step
-}
-
-/// Puts the hour's heat into the store.
-fn store_hour(home: &Home, water: &StoreStep, state: &mut State, row: &mut Row) {
-    let Some(store) = home.hot_water.as_ref().and_then(|water| water.store) else {
-        // What is heated as it is drawn comes out as hot as the heater can make it.
-        let missing_kwh = (water.wanted_kwh - row.water_heat_kwh()).max(0.0);
-        if missing_kwh > 1e-9 {
-            row.water_drawn_kwh -= missing_kwh;
-            row.water_missing_kwh += missing_kwh;
-            row.flags |= Flags::WATER_SHORT;
-        }
-        return;
-    };
-    let heat_kwh = row.water_heat_kwh();
-    row.store_stored_kwh = heat_kwh - water.drawn_kwh - water.lost_kwh;
-    state.store = store.after(water, heat_kwh);
-    row.store_c = Some(state.store.mean_c);
-}
-
-/// Tells the source what was drawn, and charges its pump.
-fn ground_hour(hour: usize, system: &MachineSystem, state: &mut State, row: &mut Row) {
-    let source = &system.source;
-    source.drawn(hour, row.extracted_kwh, &mut state.ground);
-    row.source_side_kwh += source.pump_kwh(hour, row.running_hours);
-    row.returned_kwh = source.returned_kwh(hour);
-}
-
-/// A heat pump: a block of hot water first, the rooms in what is left of the hour, backup for what is missing.
-pub(super) fn heat_pump_hour<P: Probe>(
-    system: &MachineSystem,
-    home: &Home,
-    cold: &ColdSide,
-    water: &StoreStep,
-    rooms: &Rooms,
-    row: &mut Row,
-    probe: &mut P,
-) {
-    let mut hours_left = 1.0;
-    if water.wanted_kwh > 0.0 {
-        let used = hot_water_block(system, home, cold, water, row, probe);
-        hours_left -= used;
-    }
-    if rooms.wanted_kw > 0.0 {
-        if hours_left > LEAST_RUN_H {
-            // What hot water took from the hour is left to the fabric's storage: a compensated flow is not raised for it.
-            let shared_c = row
-                .water_flow_c
-                .filter(|_| fault::on(Fault::OneFlowForBothDuties));
-            let ask = |heat_kw: f64| {
-                let warm = home.emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
-                Duty {
-                    heat_kw: warm.heat_kw,
-                    flow_c: shared_c.unwrap_or(warm.water.flow_c + home.emitters.header_k()),
-                    spread_k: warm.spread_k,
-                    hours: hours_left,
-                    at_full_output: false,
-                }
-            };
-            let (duty, delivered) = in_balance(system, cold, rooms.wanted_kw, ask);
-            let asked_kw = rooms.wanted_kw * (1.0 - ROUNDING);
-            let by_control = duty.heat_kw < asked_kw && !delivered.flags.short;
-            row.flags |= Flags::FLOW_TOO_COOL.when(by_control);
-            probe.see(DutyKind::SpaceHeat, cold, &duty, &delivered);
-            row.machine_space_kwh = delivered.heat_kwh;
-            row.machine_space_electricity_kwh = charge(row, &delivered);
-            row.space_cop = cop(delivered.heat_kwh, row.machine_space_electricity_kwh);
-            if delivered.heat_kwh > 0.0 {
-                let to_emitters_c = delivered.flow_c - home.emitters.header_k();
-                let throttled_k = throttled_k(home, rooms, duty.heat_kw);
-                row.machine_flow_c = Some(delivered.flow_c);
-                row.space_flow_c = Some(to_emitters_c);
-                row.space_return_c =
-                    Some(to_emitters_c - throttled_k - delivered_spread_k(&duty, &delivered));
-            }
-        }
-        row.backup_kwh = (rooms.least_kwh - row.machine_space_kwh).clamp(0.0, system.backup_kw);
-        row.flags |= Flags::BACKUP.when(row.backup_kwh > 0.0);
-        row.circulation_kwh = system.circulation_kw * hours_left;
-    }
-    let idle = system.machine.idle();
-    // The cycling coefficient of EN 14825 already holds what a cycling machine takes while it stands.
-    let at_rest_kw = if row.flags.has(Flags::CYCLING) {
-        0.0
-    } else if row.running_hours > 0.0 || rooms.wanted_kw > 0.0 {
-        idle.thermostat_off_kw
-    } else {
-        idle.standby_kw + idle.crankcase_kw
-    };
-    row.idle_kwh = at_rest_kw * (1.0 - row.running_hours).max(0.0);
-}
-
-/// The machine in balance with the emitters: where it cannot give what is asked, the flow is what the emitters need for the heat it
-/// does give, which is more at the lower flow.
-fn in_balance(
-    system: &MachineSystem,
-    cold: &ColdSide,
-    wanted_kw: f64,
-    ask: impl Fn(f64) -> Duty,
-) -> (Duty, Delivered) {
-    /// Heat asked and heat given agree to this share.
-    const TOLERANCE: f64 = 1e-4;
-    /// Substitutions; output falls by a few percent over the kelvins in question, so each gains more than a digit.
-    const MOST: usize = 12;
-    let mut duty = ask(wanted_kw);
-    let mut delivered = system.machine.deliver(cold, &duty);
-    for _ in 0..MOST {
-        let given_kw = delivered.heat_kwh / duty.hours;
-        let short = delivered.flags.short && given_kw > 0.0;
-        if !short || given_kw >= duty.heat_kw * (1.0 - TOLERANCE) {
-            break;
-        }
-        duty = ask(given_kw);
-        // Asked for what it gave at a hotter flow, it could give more: its greatest output at this flow is the next guess.
-        let greatest_kw = system.machine.greatest_output_kw(cold, duty.flow_c);
-        duty = ask(greatest_kw.clamp(given_kw, wanted_kw));
-        delivered = system.machine.deliver(cold, &duty);
-    }
-    (duty, delivered)
-}
-
-/// By how much the valves cool the return below that of the designed water flow, K.
-fn throttled_k(home: &Home, rooms: &Rooms, heat_kw: f64) -> f64 {
-    match home.emitters.control() {
-        Control::FollowingLoad => 0.0,
-        Control::Line { .. } | Control::Fixed(_) => {
-            let warm = home.emitters.supply(heat_kw, rooms.room_c, rooms.outdoor_c);
-            warm.water.flow_c - warm.water.return_c - warm.spread_k
-        }
-    }
-}
-
-/// Flow minus return while the machine runs: the design water flow carries the heat of the running time, held to what pump and
-/// machine allow.
-fn delivered_spread_k(duty: &Duty, delivered: &Delivered) -> f64 {
-    let asked_kwh = duty.heat_kw * duty.hours;
-    if asked_kwh > 0.0 && delivered.running_hours > 0.0 {
-        let mean_spread_k = duty.spread_k * delivered.heat_kwh / asked_kwh;
-        running_spread_k(mean_spread_k, delivered.running_hours / duty.hours)
-    } else {
-        duty.spread_k
-    }
-}
-
-/// A block of hot water at full output; the immersion heater lifts what the machine cannot reach. Gives the hours used.
-fn hot_water_block<P: Probe>(
-    system: &MachineSystem,
-    home: &Home,
-    cold: &ColdSide,
-    water: &StoreStep,
-    row: &mut Row,
-    probe: &mut P,
-) -> f64 {
-    let Some(store) = home.hot_water.as_ref().and_then(|water| water.store) else {
-        return 0.0;
-    };
-    let reachable_c = system.machine.limits().highest_flow_at(cold.open_c) - store.coil_k;
-    let end_c = water.machine_target_c.min(reachable_c);
-    let machine_kwh =
-        ((end_c - water.before_c) * store.capacity_kwh_per_k).clamp(0.0, water.wanted_kwh);
-    let mut used_hours = 0.0;
-    if machine_kwh > 0.0 {
-        let duty = Duty {
-            heat_kw: machine_kwh,
-            // The store warms along the block; its mean carries the mean COP closely (the curve is nearly straight).
-            flow_c: (water.before_c + end_c) / 2.0 + store.coil_k,
-            spread_k: store.coil_k,
-            hours: 1.0,
-            at_full_output: true,
-        };
-        let delivered = system.machine.deliver(cold, &duty);
-        probe.see(DutyKind::HotWater, cold, &duty, &delivered);
-        used_hours = delivered.running_hours;
-        row.machine_water_kwh = delivered.heat_kwh;
-        row.machine_water_electricity_kwh = charge(row, &delivered);
-        row.water_cop = cop(delivered.heat_kwh, row.machine_water_electricity_kwh);
-        if delivered.heat_kwh > 0.0 {
-            row.water_flow_c = Some(delivered.flow_c);
-        }
-    }
-    // Only what the machine can never reach is left to the immersion heater; a block that is merely long goes on.
-    let beyond_kwh = if row.machine_water_kwh > 0.0 || machine_kwh == 0.0 {
-        water.wanted_kwh - machine_kwh
-    } else {
-        water.wanted_kwh
-    };
-    row.immersion_kwh = beyond_kwh.clamp(0.0, system.immersion_kw);
-    row.flags |= Flags::IMMERSION.when(row.immersion_kwh > 0.0);
-    used_hours
-}
-
-/// Puts a duty's electricity into its components; gives their sum.
-fn charge(row: &mut Row, delivered: &Delivered) -> f64 {
-    row.compressor_kwh += delivered.compressor_kwh;
-    row.source_side_kwh += delivered.source_side_kwh;
-    row.defrost_kwh += delivered.defrost_kwh;
-    row.allowance_kwh += delivered.allowance_kwh;
-    row.extracted_kwh += delivered.extracted_kwh;
-    row.running_hours += delivered.running_hours;
-    row.starts += delivered.starts;
-    if delivered.running_hours > 0.0 {
-        // Of two duties in the hour the colder: what the source had to bear.
-        row.source_c = Some(
-            row.source_c
-                .map_or(delivered.source_c, |c| c.min(delivered.source_c)),
-        );
-    }
-    row.flags |= Flags::CYCLING.when(delivered.flags.cycling)
-        | Flags::FLOW_CAPPED.when(delivered.flags.capped_flow)
-        | Flags::MACHINE_STOPPED.when(delivered.flags.stopped)
-        | Flags::TURNED_DOWN.when(delivered.flags.turned_down)
-        | Flags::AT_GREATEST_OUTPUT.when(delivered.flags.short)
-        | Flags::FROSTING.when(delivered.flags.frosting);
-    delivered.compressor_kwh
-        + delivered.source_side_kwh
-        + delivered.defrost_kwh
-        + delivered.allowance_kwh
-}
-
-fn cop(heat_kwh: f64, electricity_kwh: f64) -> Option<f64> {
-    (heat_kwh > 0.0 && electricity_kwh > 0.0).then(|| heat_kwh / electricity_kwh)
-}
-
-/// A boiler: hot water first, then the rooms, its efficiency following the water that comes back.
-pub(super) fn boiler_hour(
-    boiler: &Boiler,
-    fixed_flow_c: Option<f64>,
-    home: &Home,
-    water: &StoreStep,
-    rooms: &Rooms,
-    row: &mut Row,
-) {
-    row.heater_water_kwh = water.wanted_kwh.min(boiler.output_kw);
-    let has_store = home
-        .hot_water
-        .as_ref()
-        .is_some_and(|water| water.store.is_some());
-    row.fuel_kwh = row.heater_water_kwh / boiler.water_efficiency(has_store);
-    row.heater_space_kwh = rooms.wanted_kw.min(boiler.output_kw - row.heater_water_kwh);
-    if row.heater_space_kwh > 0.0 {
-        let supply = home
-            .emitters
-            .supply(row.heater_space_kwh, rooms.room_c, rooms.outdoor_c);
-        row.flags |=
-            Flags::FLOW_TOO_COOL.when(supply.heat_kw < row.heater_space_kwh * (1.0 - ROUNDING));
-        row.heater_space_kwh = supply.heat_kw;
-        let follows = supply.water;
-        // Fixed: it fires at its set flow with the emitters' design spread and lets the valves throttle.
-        let warm = fixed_flow_c.map_or(follows, |flow_c| WaterTemperatures {
-            flow_c,
-            return_c: flow_c - home.emitters.design_spread_k(),
-        });
-        row.fuel_kwh += row.heater_space_kwh / boiler.gross_efficiency(warm.return_c);
-        row.space_flow_c = Some(warm.flow_c);
-        row.space_return_c = Some(warm.return_c);
-    }
-    let heat_kwh = row.heater_water_kwh + row.heater_space_kwh;
-    row.heater_electricity_kwh = heat_kwh * boiler.electricity_per_heat;
-    row.fuel_loss_kwh = row.fuel_kwh - heat_kwh;
 }

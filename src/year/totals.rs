@@ -2,6 +2,7 @@
 
 use super::Sink;
 use super::row::{Flags, Row, Sums};
+use crate::extremes::{greater, lesser};
 
 /// Sums of a stretch of hours by civil month, with the extremes.
 #[derive(Debug, Clone, PartialEq)]
@@ -58,17 +59,20 @@ impl<'a> Totals<'a> {
 }
 
 impl Sink for Totals<'_> {
+    #[inline]
     fn take(&mut self, hour: usize, row: &Row) {
         self.months[usize::from(self.month0[hour])].add(row);
         self.hours += 1;
-        self.min_indoor_c = self.min_indoor_c.min(row.indoor_c);
-        self.peak_electric_kw = self.peak_electric_kw.max(row.electricity_kwh());
+        self.min_indoor_c = lesser(row.indoor_c, self.min_indoor_c);
+        self.peak_electric_kw = greater(row.electricity_kwh(), self.peak_electric_kw);
         let backed = row.flags.has(Flags::BACKUP) || row.flags.has(Flags::IMMERSION);
         self.hours_backup += u32::from(backed);
         self.hours_short += u32::from(row.flags.has(Flags::SHORT));
         self.hours_water_short += u32::from(row.flags.has(Flags::WATER_SHORT));
         self.hours_stopped += u32::from(row.flags.has(Flags::MACHINE_STOPPED));
         self.hours_turned_down += u32::from(row.flags.has(Flags::TURNED_DOWN));
-        self.min_source_c = self.min_source_c.min(row.source_c.unwrap_or(f64::INFINITY));
+        if let Some(source_c) = row.source_c {
+            self.min_source_c = lesser(source_c, self.min_source_c);
+        }
     }
 }

@@ -1,7 +1,7 @@
 //! What every picture is checked for, and invented data to draw.
 
 use std::path::PathBuf;
-use winterledger::chart::{Marks, PNG_PIXELS, Picture, WIDTH};
+use winterledger::chart::{Marks, PNG_PIXELS, Picture};
 
 fn folder() -> PathBuf {
     let folder = PathBuf::from(env!("CARGO_TARGET_TMPDIR")).join("gallery");
@@ -68,7 +68,8 @@ pub fn check(name: &str, picture: &Picture) {
         .expect("readable PNG")
         .info()
         .clone();
-    assert_eq!(info.width, WIDTH as u32 * PNG_PIXELS, "{name}");
+    let width = picture.canvas().right as u32;
+    assert_eq!(info.width, width * PNG_PIXELS, "{name}");
     assert_eq!(
         info.height,
         picture.canvas().bottom.ceil() as u32 * PNG_PIXELS,

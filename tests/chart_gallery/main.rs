@@ -12,6 +12,8 @@ mod common;
 #[cfg(test)]
 mod flows;
 #[cfg(test)]
+mod glance;
+#[cfg(test)]
 mod hours;
 #[cfg(test)]
 mod loads;

@@ -6,7 +6,7 @@ Run `cargo test --test chart_gallery` first, then, with PyPI resvg-py 0.5.0, pil
 
 Prints the share of pixels that differ by more than 80 of 255 steps; edges and text at sub-pixel places make up a part in a
 thousand. Ends with status 1 if a picture differs in more than 0.5 % of its pixels. Hostile names in scripts that
-the fonts lack are left out: there the SVG keeps the text and the PNG shows open boxes, on purpose.
+the fonts lack are left out: there the SVG keeps the text and the PNG shows a mark, on purpose.
 """
 
 import io

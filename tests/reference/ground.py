@@ -119,6 +119,41 @@ def resistances():
     )
 
 
+def double_tubes():
+    """Two U-tubes in a bore, their legs opposite each other: pygfunction's MultipleUTube, its multipoles of several orders.
+
+    Rb: all legs alike. Ra: legs that go down against legs that go up, for the heat of the bore, which is half of T_down - T_up for each
+    pipe of a unit heat: the eigenvalue R11 - R13 of the matrix of a square of pipes.
+    """
+    rows = []
+    for r_b, r_o, spacing, k_s, k_g, r_fp in [
+        (0.065, 0.016, 0.0653, 2.3, 1.5, 0.27),
+        (0.065, 0.016, 0.0653, 2.0, 1.5, 0.09),
+        (0.075, 0.016, 0.090, 2.0, 1.5, 0.09),
+        (0.0765, 0.020, 0.080, 3.4, 0.9, 0.12),
+        (0.065, 0.016, 0.050, 1.2, 2.0, 0.07),
+        (0.075, 0.020, 0.060, 2.3, 1.0, 0.25),
+    ]:
+        c = spacing / 2
+        # Legs in first, then legs out: those of a U-tube are the first and third, second and fourth.
+        pos = [(-c, 0.0), (0.0, -c), (c, 0.0), (0.0, c)]
+        out = []
+        for order in (0, 1, 10):
+            bore = gt.boreholes.Borehole(100.0, 1.0, r_b, 0.0, 0.0)
+            tube = gt.pipes.MultipleUTube(pos, r_o - 0.003, r_o, bore, k_s, k_g, r_fp, 2, config="parallel", J=order)
+            R = tube.local_borehole_thermal_resistance(), tube._Rd
+            full, _ = gt.pipes.thermal_resistances(pos, r_o, r_b, k_s, k_g, r_fp, J=order)
+            # All legs alike: the local resistance that the library itself gives.
+            assert abs(R[0] - (full[0, 0] + 2 * full[0, 1] + full[0, 2]) / 4) < 1e-9
+            out += [R[0], full[0, 0] - full[0, 2]]
+        rows.append([r_b, r_o, spacing, k_s, k_g, r_fp] + [repr(float(v)) for v in out])
+    write(
+        "ground_double_tubes.csv",
+        ["bore_radius_m", "pipe_radius_m", "spacing_m", "ground_k", "grout_k", "fluid_to_pipe", "rb_0", "ra_0", "rb_1", "ra_1", "rb_10", "ra_10"],
+        rows,
+    )
+
+
 def pipes():
     """Friction, film and pipe resistance of brine in a pipe."""
     rows = []
@@ -165,6 +200,7 @@ def cylinder():
 responses()
 walls()
 resistances()
+double_tubes()
 pipes()
 brines()
 cylinder()

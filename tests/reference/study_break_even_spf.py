@@ -1,4 +1,4 @@
-"""Break-even SPF at the published household cap of April to June 2026 (methods: 24.67 p/kWh and 57.21 p/day of electricity,
+"""Break-even SPF at the published household cap of April to June 2026 (24.67 p/kWh and 57.21 p/day of electricity,
 5.74 p/kWh and 29.09 p/day of gas), found by making two yearly bills equal, for tests/study.rs.
 
 Made with Python 3.11 and scipy:

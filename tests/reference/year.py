@@ -1,6 +1,6 @@
 """The year of three homes once more, in another language and with another property library.
 
-Made from the documentation: methods (EN 442, ISO 13790, Kusuda and Achenbach, the tapping profile M of Regulation (EU) No
+Made from the documentation and its sources (EN 442, ISO 13790, Kusuda and Achenbach, the tapping profile M of Regulation (EU) No
 811/2013, the frost, cycling and combustion formulas quoted in the doc comments), the conventions of DEVELOPERS.md, and the doc
 comments and constants of `src` as `cargo doc --document-private-items` shows them.
 
@@ -325,10 +325,7 @@ class Machine:
             return nothing
         highest = self.highest_flow(open_c)
         wanted = heat_kw
-        if flow > highest:
-            wanted *= min(max((highest - (flow - spread)) / spread, 0.0), 1.0)
-            flow = highest
-        if wanted <= 0:
+        if wanted <= 0 or flow > highest + 1e-6:
             return nothing
         home = self.pump_at_home_kw
         if at_full_output:
@@ -556,13 +553,14 @@ def year(brief, machine, home, weather, zone):
                 used, water, electric = got["running"], got["heat"], got["electric"]
             left = 1.0 - used
             running, circulation = used, 0.0
+            lift_kw = backup_kw if boiler is None else backup_kw + boiler.output
             if wanted > 0:
+                helped = min(max(least, 0.0), lift_kw)
                 if left > 1e-6:
-                    got, carried = in_balance(machine, home, offer, wanted, room, outdoor, left, moisture)
+                    got, helped = in_balance(machine, home, offer, wanted, least, lift_kw, room, outdoor, left, moisture)
                     space, cycling = got["heat"], got["cycling"]
                     electric += got["electric"]
                     running += got["running"]
-                helped = min(max(least - space, 0.0), backup_kw if boiler is None else boiler.output)
                 circulation = 0.025 * left
             idle = 0.0 if cycling else machine.idle_kw["thermostat_off"] if running > 0 or wanted > 0 else machine.idle_kw["standby"] + machine.idle_kw["crankcase"]
             electric += circulation + idle * max(1 - running, 0.0)
@@ -570,8 +568,10 @@ def year(brief, machine, home, weather, zone):
             if boiler is None:
                 electric += helped
             elif helped > 0:
-                carried, _, back, _ = home.supply(helped + space, room, outdoor)
-                fuel = boiler.fuel(helped, back)
+                _, flow, back, _ = home.supply(helped + space, room, outdoor)
+                # Behind the machine: what it has warmed enters the boiler.
+                enters = flow - (flow - back) * helped / (helped + space) if space > 0 else back
+                fuel = boiler.fuel(helped, enters)
                 electric += helped * boiler.electric_per_heat
             return {"space": space + helped, "water": water, "electricity": electric, "fuel": fuel, "backup": helped, "running": running}
 
@@ -600,19 +600,64 @@ def year(brief, machine, home, weather, zone):
     return frame, bill(electricity, frame["electricity"], clock, days), bill(gas, frame["fuel"], clock, days)
 
 
-def in_balance(machine, home, offer, wanted, room, outdoor, hours, moisture):
-    """A machine that cannot give what is asked runs at the flow the emitters need for what it does give."""
-    heat, flow, _, spread = home.supply(wanted, room, outdoor)
+def in_balance(machine, home, offer, wanted, least, lift_kw, room, outdoor, hours, moisture):
+    """The machine, and what is added behind it in the flow, kWh.
+
+    Alone it gives what the emitters take at a flow that it reaches. Where that is less than keeps the rooms above the point where
+    they are helped, it warms the return of the whole as far as it can.
+    """
+    highest = machine.highest_flow(offer[0])
+
+    def carried(heat):
+        got = home.supply(heat, room, outdoor)
+        if got[1] <= highest:
+            return got
+        heat = min(heat, home.output(highest, room))
+        mean, spread = home.carried(heat, room)
+        return heat, highest, 2 * mean - highest, spread
+
+    heat, flow, _, spread = carried(wanted)
     got = machine.deliver(offer, flow, spread, heat, hours, moisture)
-    if not got["short"]:
-        return got, heat
-    low, high = got["heat"] / hours, heat
-    for _ in range(22):
-        ask = (low + high) / 2
-        heat, flow, _, spread = home.supply(ask, room, outdoor)
-        got = machine.deliver(offer, flow, spread, heat, hours, moisture)
-        low, high = (low, ask) if got["short"] else (ask, high)
-    return got, heat
+    if got["short"]:
+        low, high = got["heat"] / hours, heat
+        for _ in range(22):
+            ask = (low + high) / 2
+            heat, flow, _, spread = carried(ask)
+            got = machine.deliver(offer, flow, spread, heat, hours, moisture)
+            low, high = (low, ask) if got["short"] else (ask, high)
+    if got["heat"] >= least or lift_kw <= 0:
+        return got, 0.0
+    total = min(home.supply(least, room, outdoor)[0], home.greatest_output())
+    if total <= got["heat"]:
+        return got, 0.0
+    if got["heat"] <= 0:
+        return got, min(total, lift_kw)
+
+    def machine_part(total):
+        """Most that the machine can bring of a heat: its flow is the return of the whole and what it adds."""
+        _, flow, _, spread = home.supply(total, room, outdoor)
+
+        def bears(part):
+            at = flow - spread * (1 - part / total)
+            return at <= highest and machine.steady(offer, at, "greatest", moisture)["net"] >= part
+
+        low, high = 0.0, total
+        if bears(high):
+            return high, flow, spread
+        for _ in range(22):
+            middle = (low + high) / 2
+            low, high = (middle, high) if bears(middle) else (low, middle)
+        return low, flow - spread * (1 - low / total), spread * low / total
+
+    if machine_part(total)[0] * hours + lift_kw < total:
+        low, high = got["heat"], total
+        for _ in range(22):
+            middle = (low + high) / 2
+            low, high = (middle, high) if machine_part(middle)[0] * hours + lift_kw >= middle else (low, middle)
+        total = low
+    part, flow, spread = machine_part(total)
+    got = machine.deliver(offer, flow, spread, part, hours, moisture)
+    return got, min(max(total - got["heat"], 0.0), lift_kw)
 
 
 def read_tariff(brief, name):

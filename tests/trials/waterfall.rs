@@ -226,6 +226,12 @@ fn from_the_sheet_to_the_trial() {
             At::H4(2.71),
         ),
         (
+            "Air of one speed, mild maritime",
+            case(SEMI_DETACHED, "morvane_sound", 0.0, AIR_R410A),
+            "RHPP 2017",
+            At::H4(2.44),
+        ),
+        (
             "Air, inland",
             case(EXISTING_BUILDING, "ostrel_plain", 0.0, AIR_R290),
             "ISE 2020",

@@ -51,7 +51,7 @@ pub fn rows() -> Vec<Row> {
         ),
         Row::new(
             "The same rates if they did not hold tax, £ a year",
-            "methods §16: £1723",
+            "tax of 5 % added again, by hand: £1723",
             1723.25,
             household(false),
             1e-9,
@@ -77,7 +77,7 @@ pub fn rows() -> Vec<Row> {
                     "Break-even SPF by unit rates against a boiler of {:.0} %",
                     100.0 * v[1]
                 ),
-                "methods §7, computed from the published rates",
+                "GB price cap April to June 2026, unit rates, by hand",
                 if v[1] == 0.85 { 3.65 } else { 3.87 },
                 spf.unit_rates,
                 0.005,
@@ -87,7 +87,7 @@ pub fn rows() -> Vec<Row> {
         if v[0] == 12_000.0 && v[1] == 0.85 {
             rows.push(Row::new(
                 "The same when the gas connection ends, 12 000 kWh",
-                "methods §7: about 3.0",
+                "GB price cap April to June 2026, whole bill, by hand: about 3.0",
                 3.0,
                 spf.whole_bill,
                 0.05,

@@ -96,12 +96,12 @@ pub fn rows() -> Vec<Row> {
     ]);
     rows.push(Row::holds(
         "A combustion-only gas factor beside a full-assessment electricity factor is refused, two of one scope are not",
-        "methods §7 and §16: the scope travels with the factor",
+        "common practice, no source: the scope travels with the factor",
         mixed.is_err() && alike.is_ok(),
     ));
     rows.push(Row::new(
         "Published sets whose factors are all of the scope they name",
-        "methods §7",
+        "common practice, no source: a factor and its scope belong together",
         PUBLISHED.len() as f64,
         PUBLISHED
             .iter()

@@ -5,7 +5,7 @@ use winterledger::refrigerant::{Equation, Refrigerant};
 
 use crate::table::{Row, Worst, number, reference};
 
-/// Half a unit of the last digit that methods.md prints, and a hair for what lies just on it.
+/// Half a unit of the last digit that is printed, and a hair for what lies just on it.
 const THREE_DECIMALS: f64 = 0.0005001;
 const LIBRARY: &str = "CoolProp 8.0.0";
 const BOOK: &str =

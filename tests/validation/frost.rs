@@ -62,7 +62,7 @@ pub fn rows() -> Vec<Row> {
         ),
         Row::new(
             "Outdoor temperature of the worst frost, °C",
-            "methods §9: worst near 0 °C",
+            "osti.gov/biblio/5589942, field test: worst near 0 °C",
             0.0,
             worst_c,
             3.0,

@@ -3,76 +3,25 @@
 use std::f64::consts::TAU;
 
 use winterledger::source::{
-    AnnualSwing, Antifreeze, Bore, Brine, BrineProperties, Filling, Layout, LoopDesign, Memory,
-    Pipe, Pump, Soil, Trench, UTube, undisturbed_c,
+    Antifreeze, Brine, BrineProperties, Layout, LoopDesign, Memory, Pipe, Soil, Trench, UTube,
+    UTubes, undisturbed_c,
 };
+
+#[path = "../reference/ground_loops.rs"]
+mod ground_loops;
+use ground_loops::{PIPE, design};
 
 use crate::table::{Row, Worst, number, numbers, reference};
 
+const MULTIPLE: &str = "pygfunction 2.3.1 (MultipleUTube, parallel, tenth order or as said)";
 const LIBRARY: &str = "pygfunction 2.3.1, uniform heat rate";
 
-fn bore(depth_m: f64, buried_m: f64, radius_m: f64, x_m: f64, y_m: f64) -> Bore {
-    Bore {
-        x_m,
-        y_m,
-        depth_m,
-        buried_m,
-        radius_m,
-    }
-}
-
-/// The fields of the script.
-fn field(name: &str) -> Vec<Bore> {
-    match name {
-        "one" => vec![bore(100.0, 4.0, 0.075, 0.0, 0.0)],
-        "two" => vec![
-            bore(80.0, 1.0, 0.065, 0.0, 0.0),
-            bore(80.0, 1.0, 0.065, 6.0, 0.0),
-        ],
-        "four" => [(0.0, 0.0), (0.0, 6.0), (6.0, 0.0), (6.0, 6.0)]
-            .map(|(x, y)| bore(100.0, 1.0, 0.065, x, y))
-            .to_vec(),
-        "unequal" => vec![
-            bore(120.0, 1.0, 0.065, 0.0, 0.0),
-            bore(70.0, 3.0, 0.065, 5.0, 0.0),
-            bore(95.0, 2.0, 0.075, 2.0, 7.0),
-        ],
-        other => panic!("{other}"),
-    }
-}
-
-pub fn design(layout: Layout, soil: Soil) -> LoopDesign {
-    LoopDesign {
-        layout,
-        pipe: Pipe {
-            outside_m: 0.04,
-            wall_m: 0.0037,
-            conductivity_w_per_m_k: 0.42,
-        },
-        soil,
-        surface: AnnualSwing {
-            mean_c: 10.0,
-            amplitude_k: 8.0,
-            coldest_hour: 600.0,
-        },
-        gradient_k_per_m: 0.0,
-        brine: Brine::new(Antifreeze::EthyleneGlycol, 0.3).unwrap(),
-        flow_kg_per_s: 0.5,
-        pump: Pump::Efficiency(0.3),
-        recharge_kwh: 0.0,
-    }
-}
-
 fn bores(name: &str, diffusivity_m2_per_s: f64) -> LoopDesign {
-    let layout = Layout::Bores {
-        bores: field(name),
-        filling: Filling::Resistance(0.1),
-    };
     let soil = Soil {
         conductivity_w_per_m_k: 2.0,
         diffusivity_m2_per_s,
     };
-    design(layout, soil)
+    ground_loops::bores(name, soil)
 }
 
 fn g_function(design: &LoopDesign, years: f64) -> f64 {
@@ -177,7 +126,7 @@ fn life() -> Row {
     }
     Row::new(
         "Fall of the yearly mean wall from year 1 to 25 of a single bore, K for 10 W/m",
-        "methods §16",
+        "common practice, no source: about 1.5",
         1.5,
         means[0] - means[24],
         0.15,
@@ -185,19 +134,25 @@ fn life() -> Row {
     )
 }
 
+/// A row of the script's resistances as a bore.
+fn u_tubes(count: UTubes, v: &[f64]) -> UTube {
+    UTube {
+        bore_radius_m: v[0],
+        pipe: Pipe {
+            outside_m: 2.0 * v[1],
+            wall_m: 0.003,
+            conductivity_w_per_m_k: 0.4,
+        },
+        spacing_m: v[2],
+        grout_w_per_m_k: v[4],
+        count,
+    }
+}
+
 fn loops() -> Vec<Row> {
     let (mut first, mut tenth) = (Worst::relative(1e-7), Worst::relative(0.01));
     for v in numbers("ground_resistances.csv") {
-        let tube = UTube {
-            bore_radius_m: v[0],
-            pipe: Pipe {
-                outside_m: 2.0 * v[1],
-                wall_m: 0.003,
-                conductivity_w_per_m_k: 0.4,
-            },
-            spacing_m: v[2],
-            grout_w_per_m_k: v[4],
-        };
+        let tube = u_tubes(UTubes::One, &v);
         let local = tube.local_resistance(v[3], v[5]);
         let internal = tube.internal_resistance(v[3], v[5]);
         first.see(v[6], local);
@@ -205,11 +160,18 @@ fn loops() -> Vec<Row> {
         tenth.see(v[8], local);
         tenth.see(v[9], internal);
     }
-    let pipe = Pipe {
-        outside_m: 0.04,
-        wall_m: 0.0037,
-        conductivity_w_per_m_k: 0.42,
-    };
+    let (mut two, mut two_tenth, mut internal) = (
+        Worst::relative(1e-6),
+        Worst::relative(0.01),
+        Worst::relative(0.06),
+    );
+    for v in numbers("ground_double_tubes.csv") {
+        let tubes = u_tubes(UTubes::Two, &v);
+        let local = tubes.local_resistance(v[3], v[5]);
+        two.see(v[8], local);
+        two_tenth.see(v[10], local);
+        internal.see(v[11], tubes.internal_resistance(v[3], v[5]));
+    }
     let brine = BrineProperties {
         density_kg_per_m3: 1043.0,
         heat_capacity_kj_per_kg_k: 3.7,
@@ -218,7 +180,7 @@ fn loops() -> Vec<Row> {
     };
     let (mut friction, mut film) = (Worst::relative(1e-5), Worst::relative(0.0));
     for v in numbers("ground_pipes.csv") {
-        let flow = pipe.flow(v[0], &brine);
+        let flow = PIPE.flow(v[0], &brine);
         friction.see(v[1], flow.pascal_per_m);
         let between = (2300.0..4000.0).contains(&flow.reynolds);
         film.see_within(
@@ -231,6 +193,14 @@ fn loops() -> Vec<Row> {
     vec![
         first.row("Borehole resistances, first-order multipole, m K/W", library, 10, "the library iterates to about 1e-8"),
         tenth.row("The same against the tenth order", library, 10, "orders differ by less than 1 %"),
+        two.row("Resistances of bores with two U-tubes, first-order multipole, m K/W", MULTIPLE, 6, "the library iterates until its multipoles change by 1e-5"),
+        two_tenth.row("The same against the tenth order", MULTIPLE, 6, "orders differ by less than 1 %"),
+        internal.row(
+            "Resistance between the legs of two U-tubes, m K/W",
+            MULTIPLE,
+            6,
+            "ours is of order zero: its term adds a few per cent to the resistance of a bore",
+        ),
         friction.row("Friction of brine in pipes, Pa/m", library, 6, "both iterate Colebrook's equation to 1e-6 or better"),
         film.row(
             "Film resistance of brine in pipes, m K/W",

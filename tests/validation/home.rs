@@ -73,7 +73,7 @@ pub fn rows() -> Vec<Row> {
     let emitters = Emitters::new(EmitterKind::Radiators, 5.0, 50.0, 43.0, 20.0, 85.0);
     rows.push(Row::new(
         "Mean water of radiators at 50/43 °C, °C",
-        "methods §16: neither the flow nor the condensing temperature",
+        "EN 442, by hand: neither the flow nor the condensing temperature",
         46.5,
         emitters.at_load(5.0, 20.0).mean_c(),
         1e-9,
@@ -148,7 +148,7 @@ fn demand() -> Vec<Row> {
         let of = |pattern: &Pattern| heat(&site, pattern, time_constant_h, 12.0);
         rows.push(Row::new(
             format!("More heat all day than on nine hours, time constant {time_constant_h} h, %"),
-            "methods §16: 5 to 17 %",
+            "common practice, no source: 5 to 17 %",
             percent,
             100.0 * (of(&Pattern::continuous(20.0)) / of(&nine_hours()) - 1.0),
             1.0,

@@ -34,7 +34,7 @@ pub fn rows() -> Vec<Row> {
     for (draw_c, kwh) in [(50.0, 5.58), (40.0, 4.19)] {
         rows.push(Row::new(
             format!("120 L drawn at {draw_c} °C from 10 °C, kWh"),
-            "methods §11: a volume means nothing without temperatures",
+            "4.186 kJ/(kg K) by hand: a volume means nothing without temperatures",
             kwh,
             HotWater::energy_kwh(120.0, draw_c, 10.0),
             0.005,
@@ -67,7 +67,7 @@ fn blocks() -> Vec<Row> {
     vec![
         Row::new(
             "Heat of the fullest hour into a store behind 1 kW, kWh",
-            "methods §16: reheat is a block at full output",
+            "common practice, no source: reheat is a block at full output",
             1.0,
             greatest,
             1e-9,
@@ -83,7 +83,7 @@ fn blocks() -> Vec<Row> {
         ),
         Row::new(
             "Standing loss of 200 L kept at 45 to 50 °C, W",
-            "methods §11: 57 W at 50 °C in 20 °C",
+            "EU 812/2013 class C (secondary source): 57 W at 50 °C in 20 °C",
             52.0,
             1000.0 * lost,
             6.0,

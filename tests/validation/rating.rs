@@ -57,7 +57,7 @@ pub fn rows() -> Vec<Row> {
     rows
 }
 
-/// Regression example of methods §1 \[inputs from memory, result computed\]; the correction for cycling is made at the points.
+/// Regression example of EN 14825 \[inputs from memory, result computed\]; the correction for cycling is made at the points.
 fn worked_example() -> Vec<Row> {
     let point = |(outdoor_c, capacity_kw, cop)| RatingPoint {
         outdoor_c,

@@ -1,6 +1,5 @@
 //! Units, fuels and currencies.
 
-use winterledger::heater::NET_PER_GROSS_METHANE;
 use winterledger::units::{
     CalorificBasis, CalorificValue, Currency, Energy, Fuel, FuelUnit, Temperature, parse,
 };
@@ -37,9 +36,17 @@ pub fn rows() -> Vec<Row> {
         ),
         Row::new(
             "Net over gross calorific value of methane",
-            "CoolProp 8.0.0 and heats of formation (methods §6)",
-            0.901,
-            NET_PER_GROSS_METHANE,
+            "heats of formation, NIST Chemistry WebBook [M]",
+            net_over_gross(-74.6, 1.0, 2.0),
+            Fuel::Gas.net_over_gross(),
+            0.0005,
+            "half of the last printed digit",
+        ),
+        Row::new(
+            "Net over gross calorific value of propane",
+            "heats of formation, NIST Chemistry WebBook [M]",
+            net_over_gross(-104.7, 3.0, 4.0),
+            Fuel::Lpg.net_over_gross(),
             0.0005,
             "half of the last printed digit",
         ),
@@ -60,4 +67,12 @@ pub fn rows() -> Vec<Row> {
             "a count",
         ),
     ]
+}
+
+/// Of a hydrocarbon by its heat of formation (kJ/mol), carbon dioxide and water that it burns to: heats of formation −393.51 of
+/// carbon dioxide, −285.83 of water and −241.83 of steam, kJ/mol.
+fn net_over_gross(formation: f64, carbon_dioxide: f64, water: f64) -> f64 {
+    let gross = formation + 393.51 * carbon_dioxide + 285.83 * water;
+    let net = formation + 393.51 * carbon_dioxide + 241.83 * water;
+    net / gross
 }

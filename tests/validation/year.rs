@@ -56,7 +56,7 @@ pub fn rows() -> Vec<Row> {
     let open = brief("tests/briefs/greensboro.toml", |text| text).case;
     rows.push(Row::new(
         "Yearly heat over coefficient on Greensboro's file, base 15.5 °C, no storage, K·d",
-        "pandas: 1694 (methods §8)",
+        "pandas: 1694",
         1694.0,
         sums(&open, "Gas boiler").space_heat_kwh() / 0.212 / 24.0,
         0.5,
@@ -139,7 +139,7 @@ fn design_load() -> Vec<Row> {
     vec![
         Row::new(
             "Design load of 212 W/K at −4 °C, kW",
-            "methods §16: 5.09, not 4.13",
+            "by hand: 5.09, not 4.13",
             5.09,
             found,
             0.015,
@@ -147,7 +147,7 @@ fn design_load() -> Vec<Row> {
         ),
         Row::new(
             "The same with a base temperature of 15.5 °C in the brief, kW",
-            "methods §16",
+            "EN 12831: no gains, no base temperature",
             5.09,
             with_base,
             0.015,
@@ -186,7 +186,7 @@ fn resized() -> Vec<Row> {
                 format!(
                     "Flow that {times} times the heat loss needs from radiators of 50/43 °C, °C"
                 ),
-                "methods §16, EN 442: about 53.5 and 46.4",
+                "EN 442 by hand: about 53.5 and 46.4",
                 expected,
                 home.emitters.at_load(load_kw, 20.0).flow_c,
                 0.1,
@@ -241,7 +241,7 @@ fn two_duties() -> Vec<Row> {
         + 0.5 * spread_k;
     vec![Row::new(
         "Flow to the rooms in an hour that also heats water, °C",
-        "EN 442 by hand; methods §16: two duties are not one at the hotter flow",
+        "EN 442 by hand: two duties are not one at the hotter flow",
         by_hand_c,
         both.space_flow_c.unwrap_or(f64::NAN),
         0.5,
@@ -276,7 +276,7 @@ fn shown_year() -> Row {
     let expected = 1.5 * w_per_m / 10.0 * 2.0 / 2.3;
     Row::new(
         "Fall of the brine of one bore of 110 m from year 1 to 25 in a whole year's run, K",
-        "methods §16: about 1.5 K for 10 W/m at 2 W/(m K), scaled to draw and sandstone",
+        "common practice, no source: about 1.5 K for 10 W/m at 2 W/(m K), scaled to draw and sandstone",
         expected,
         first.0 - last.0,
         0.3 * expected,

@@ -3,6 +3,7 @@
 use super::{Lines, Part, n, sum};
 use crate::home::Home;
 use crate::study::{Case, Contender, Traced};
+use crate::units::as_set;
 use crate::year::Flags;
 
 pub(super) fn weather(case: &Case, traced: &Traced) -> Part {
@@ -46,7 +47,12 @@ pub(super) fn rooms(contender: &Contender, traced: &Traced) -> Part {
         ),
     );
     let tau = fabric.time_constant_h();
-    let (heads_for, within) = fabric.recovery_heads_for_c(before, row.set_point_c);
+    let at_the_time = contender
+        .plan
+        .recovery
+        .as_ref()
+        .is_some_and(|recovery| recovery.at_the_time);
+    let (heads_for, within) = fabric.recovery_heads_for_c(before, row.set_point_c, at_the_time);
     part.add(
         "temperature to head for",
         heads_for,
@@ -76,16 +82,21 @@ pub(super) fn rooms(contender: &Contender, traced: &Traced) -> Part {
         "gains and stored heat are enough".to_owned()
     };
     part.add("heat wanted", row.space_wanted_kwh, "kWh", how);
+    let by_fabric_kw = fabric.design_load_kw(contender.indoor_c, contender.design_outdoor_c);
     part.add(
         "design heat load",
-        fabric.design_load_kw(contender.indoor_c, contender.design_outdoor_c),
+        contender.design_load_kw,
         "kW",
-        format!(
-            "H × (set point − design outdoor), gains not counted = {} × ({} − {})",
-            n(loss),
-            n(contender.indoor_c),
-            n(contender.design_outdoor_c)
-        ),
+        if (by_fabric_kw / contender.design_load_kw - 1.0).abs() < 1e-9 {
+            format!(
+                "H × (set point − design outdoor), gains not counted = {} × ({} − {})",
+                n(loss),
+                n(contender.indoor_c),
+                n(contender.design_outdoor_c)
+            )
+        } else {
+            "of the home as surveyed: scaling to the meter leaves it".to_owned()
+        },
     );
     part.part("What the rooms ask")
 }
@@ -137,9 +148,9 @@ pub(super) fn hot_water(home: &Home, month0: usize, traced: &Traced) -> Option<P
             row.water_heat_kwh(),
             "kWh",
             format!(
-                "a block at full output before the rooms, begun below {:.0} °C, up to {:.0} °C",
-                store.set_point_c - store.hysteresis_k,
-                store.set_point_c
+                "a block at full output before the rooms, begun below {} °C, up to {} °C",
+                as_set(store.set_point_c - store.hysteresis_k),
+                as_set(store.set_point_c)
             ),
         );
     }

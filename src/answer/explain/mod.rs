@@ -11,6 +11,8 @@ use chrono::{SecondsFormat, TimeZone as _};
 use serde::Serialize;
 
 use super::cycle::StateAnswer;
+use crate::heatpump::cycle::Cycle;
+use crate::problem::{Finding, Severity};
 use crate::study::{Case, Contender, Traced};
 
 /// One hour of one system, explained.
@@ -24,6 +26,9 @@ pub struct Explanation {
     pub time_local: String,
     /// The parts, in the order in which they follow from each other.
     pub parts: Vec<Part>,
+    /// What no real machine would stand in this hour.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub findings: Vec<Finding>,
 }
 
 /// A part of an explanation.
@@ -146,8 +151,21 @@ impl Explanation {
             time_utc: utc.to_rfc3339_opts(SecondsFormat::Secs, true),
             time_local: local.format("%Y-%m-%dT%H:%M%:z").to_string(),
             parts,
+            findings: not_stood(traced),
         }
     }
+}
+
+/// Warnings of the cycles that the hour was run with; each once.
+fn not_stood(traced: &Traced) -> Vec<Finding> {
+    let cycles = traced.duties.iter().filter_map(|duty| duty.cycle.as_ref());
+    let mut found = Vec::new();
+    for finding in cycles.flat_map(Cycle::findings) {
+        if finding.severity == Severity::Warning && !found.contains(&finding) {
+            found.push(finding);
+        }
+    }
+    found
 }
 
 #[cfg(test)]

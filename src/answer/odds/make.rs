@@ -1,8 +1,9 @@
 //! From whole blocks of samples to the odds.
 
 use super::matters::{find_out, matters};
-use super::words::in_words;
+use super::words::{chance_said, in_words, not_drawn};
 use super::{Between, ChoiceOdds, OddsAnswer, QuantilesAnswer, UncertainAnswer};
+use crate::answer::comfort::leaves_cold;
 use crate::answer::lever::unit;
 use crate::problem::{Finding, Problems, Severity};
 use crate::study::odds::{Chance, Quantiles, Sample, Sampler, chance_wrong};
@@ -31,14 +32,16 @@ pub fn odds(
     let sampled = Sampled(blocks);
     let label = |place: usize| case.contenders[place].system.label.clone();
     let choices: Option<Vec<ChoiceOdds>> = (1..case.contenders.len())
-        .map(|place| choice(&label(place), place, &sampled, case))
+        .map(|place| choice(&label(place), place, &sampled, case, outcomes.get(place)?))
         .collect();
     let Some(choices) = choices else {
         return Ok(None);
     };
     let best = (1..case.contenders.len()).max_by(|&a, &b| {
+        let warm = |place: usize| choices[place - 1].leaves_cold.is_none();
         let saving = |place: usize| choices[place - 1].saving.p50;
-        saving(a).total_cmp(&saving(b))
+        let by_saving = saving(a).total_cmp(&saving(b));
+        warm(a).cmp(&warm(b)).then(by_saving)
     });
     let Some(best) = best else {
         return Ok(None);
@@ -51,12 +54,16 @@ pub fn odds(
                     label: label(one),
                     than: label(other),
                     chance_cheaper: chance.chance,
-                    chance_error: chance.error.is_finite().then_some(chance.error),
+                    chance_error: chance.error,
+                    chance_low: chance.low,
+                    chance_high: chance.high,
+                    chance_said: chance_said(&chance),
                 });
             }
         }
     }
-    let costs = sampled.costs();
+    // What leaves the home cold is nobody's cheapest.
+    let costs = sampled.costs(|place| place == 0 || choices[place - 1].leaves_cold.is_none());
     let wrong = chance_wrong(&costs).unwrap_or(0.0);
     let pair = Pair::new(case, outcomes, best);
     let what_matters = match &pair {
@@ -89,6 +96,7 @@ pub fn odds(
         choices,
         between,
         about: label(best),
+        not_drawn: not_drawn(sampler.draws_years()),
         find_out: find_out(&what_matters, wrong),
         what_matters,
         chance_wrong: wrong,
@@ -168,11 +176,17 @@ impl Sampled<'_> {
         Chance::of(saving.iter().map(Vec::as_slice), |saving| saving > 0.0)
     }
 
-    /// The cost of every system, a row a sample.
-    pub fn costs(&self) -> Vec<Vec<f64>> {
+    /// The cost of every system that counts, a row a sample.
+    pub fn costs(&self, counts: impl Fn(usize) -> bool) -> Vec<Vec<f64>> {
         let samples = self.0.iter().flatten();
         samples
-            .map(|sample| sample.systems.iter().map(|system| system.cost).collect())
+            .map(|sample| {
+                let systems = sample.systems.iter().enumerate();
+                systems
+                    .filter(|(place, _)| counts(*place))
+                    .map(|(_, system)| system.cost)
+                    .collect()
+            })
             .collect()
     }
 
@@ -197,7 +211,14 @@ pub(super) fn quantiles(blocks: &[Vec<f64>]) -> Option<QuantilesAnswer> {
     })
 }
 
-fn choice(label: &str, place: usize, sampled: &Sampled<'_>, case: &Case) -> Option<ChoiceOdds> {
+fn choice(
+    label: &str,
+    place: usize,
+    sampled: &Sampled<'_>,
+    case: &Case,
+    outcome: &Outcome,
+) -> Option<ChoiceOdds> {
+    let cold = leaves_cold(&case.contenders[place], outcome);
     let chance = sampled.chance_cheaper(place, 0)?;
     let spf = sampled.each(|sample| sample.systems[place].spf_h4.unwrap_or(f64::NAN));
     let has_spf = spf.iter().flatten().all(|spf| spf.is_finite());
@@ -211,7 +232,16 @@ fn choice(label: &str, place: usize, sampled: &Sampled<'_>, case: &Case) -> Opti
         hours_backup: quantiles(&sampled.each(|sample| sample.systems[place].hours_backup))?,
         min_indoor_c: quantiles(&sampled.each(|sample| sample.systems[place].min_indoor_c))?,
         chance_cheaper: chance.chance,
-        chance_error: chance.error.is_finite().then_some(chance.error),
-        sentence: in_words(label, chance.chance, saving, case.currency.code()),
+        chance_error: chance.error,
+        chance_low: chance.low,
+        chance_high: chance.high,
+        chance_said: chance_said(&chance),
+        sentence: in_words(
+            (label, cold.as_deref()),
+            chance.chance,
+            saving,
+            case.currency.code(),
+        ),
+        leaves_cold: cold,
     })
 }

@@ -11,6 +11,7 @@ use crate::problem::Finding;
 
 pub use make::{Wish, odds};
 pub use summary::{ChoiceSummary, Important, OddsSummary, summary};
+pub use words::chance_said;
 
 /// How sure the comparison is.
 #[derive(Debug, Clone, PartialEq, Serialize)]
@@ -31,7 +32,8 @@ pub struct OddsAnswer {
     pub choices: Vec<ChoiceOdds>,
     /// Chances of choices against each other, in the same samples.
     pub between: Vec<Between>,
-    /// The choice with the greatest saving on the median, which what follows is about.
+    /// The choice with the greatest saving on the median, of those that keep rooms and water warm where one does; what follows is
+    /// about it.
     pub about: String,
     /// What makes the spread of its saving, the most first.
     pub what_matters: Vec<Matters>,
@@ -39,6 +41,8 @@ pub struct OddsAnswer {
     pub chance_wrong: f64,
     /// What was taken as uncertain, as the choice that `about` names has it.
     pub uncertain: Vec<UncertainAnswer>,
+    /// What the samples do not draw, in words.
+    pub not_drawn: String,
     /// What to find out first, in words.
     pub find_out: String,
     /// What was odd and what was done about it.
@@ -68,6 +72,15 @@ pub struct ChoiceOdds {
     /// Standard error of that chance; absent with a single block.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub chance_error: Option<f64>,
+    /// Why it is no fair answer however likely it is to be cheaper; absent where rooms and water are kept warm.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub leaves_cold: Option<String>,
+    /// Limits that hold the chance in 95 cases of 100, by the samples drawn.
+    pub chance_low: f64,
+    /// The upper one.
+    pub chance_high: f64,
+    /// The chance as far as the samples tell it, %: "48 ± 4", "more than 96" where all samples agree, "32 to 64" from a single block.
+    pub chance_said: String,
     /// The same as a sentence.
     pub sentence: String,
 }
@@ -121,6 +134,12 @@ pub struct Between {
     /// Standard error of that chance; absent with a single block.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub chance_error: Option<f64>,
+    /// Limits that hold the chance in 95 cases of 100, by the samples drawn.
+    pub chance_low: f64,
+    /// The upper one.
+    pub chance_high: f64,
+    /// The chance as far as the samples tell it, %: "48 ± 4", "more than 96" where all samples agree, "32 to 64" from a single block.
+    pub chance_said: String,
 }
 
 /// What one lever does to the spread.

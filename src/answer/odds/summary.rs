@@ -5,9 +5,10 @@ use serde::Serialize;
 use super::QuantilesAnswer;
 use super::make::{Sampled, quantiles};
 use super::matters::most_important;
-use super::words::{chance_in_words, in_words, is_about_the_same};
-use crate::study::Case;
+use super::words::{chance_in_words, chance_said, in_words, is_about_the_same, not_drawn};
+use crate::answer::comfort::leaves_cold;
 use crate::study::odds::{Sample, Sampler};
+use crate::study::{Case, Outcome};
 
 /// How many unknowns are told of a choice.
 const TOLD: usize = 2;
@@ -21,6 +22,8 @@ pub struct OddsSummary {
     pub blocks: usize,
     /// Seed they follow from.
     pub seed: u64,
+    /// What the samples do not draw, in words.
+    pub not_drawn: String,
     /// Every choice.
     pub choices: Vec<ChoiceSummary>,
 }
@@ -35,6 +38,15 @@ pub struct ChoiceSummary {
     /// Standard error of that chance; absent with a single block.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub chance_error: Option<f64>,
+    /// Why it is no fair answer however likely it is to be cheaper; absent where rooms and water are kept warm.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub leaves_cold: Option<String>,
+    /// Limits that hold the chance in 95 cases of 100, by the samples drawn.
+    pub chance_low: f64,
+    /// The upper one.
+    pub chance_high: f64,
+    /// The chance as far as the samples tell it, %: "48 ± 4", "more than 96" where all samples agree, "32 to 64" from a single block.
+    pub chance_said: String,
     /// Today's yearly cost less its own, in the same sample.
     pub saving: QuantilesAnswer,
     /// The chance in words: "about 2 chances in 3 of being cheaper".
@@ -66,10 +78,16 @@ pub struct Important {
 }
 
 /// The odds in brief from whole blocks of samples; nothing without samples.
-pub fn summary(case: &Case, sampler: &Sampler, blocks: &[Vec<Sample>]) -> Option<OddsSummary> {
+pub fn summary(
+    case: &Case,
+    outcomes: &[Outcome],
+    sampler: &Sampler,
+    blocks: &[Vec<Sample>],
+) -> Option<OddsSummary> {
     let sampled = Sampled(blocks);
     let choice = |place: usize| {
         let label = &case.contenders[place].system.label;
+        let cold = leaves_cold(&case.contenders[place], outcomes.get(place)?);
         let chance = sampled.chance_cheaper(place, 0)?;
         let saving = quantiles(&sampled.saving(place))?;
         let mut most_important = most_important(place, sampler, blocks);
@@ -83,11 +101,20 @@ pub fn summary(case: &Case, sampler: &Sampler, blocks: &[Vec<Sample>]) -> Option
         Some(ChoiceSummary {
             label: label.clone(),
             chance_cheaper: chance.chance,
-            chance_error: chance.error.is_finite().then_some(chance.error),
+            chance_error: chance.error,
+            chance_low: chance.low,
+            chance_high: chance.high,
+            chance_said: chance_said(&chance),
             saving,
             chance_words: chance_in_words(chance.chance),
             about_the_same: is_about_the_same(chance.chance),
-            sentence: in_words(label, chance.chance, saving, case.currency.code()),
+            sentence: in_words(
+                (label, cold.as_deref()),
+                chance.chance,
+                saving,
+                case.currency.code(),
+            ),
+            leaves_cold: cold,
             most_important,
             depends_on,
         })
@@ -97,6 +124,7 @@ pub fn summary(case: &Case, sampler: &Sampler, blocks: &[Vec<Sample>]) -> Option
         samples: blocks.iter().map(Vec::len).sum(),
         blocks: blocks.len(),
         seed: sampler.seed(),
+        not_drawn: not_drawn(sampler.draws_years()),
         choices: choices?,
     })
 }

@@ -3,7 +3,7 @@
 use super::super::defaults;
 use super::super::notes::Notes;
 use super::circuit::{brine, flow_kg_per_s, given_flow, pipe, pump};
-use super::layout::{bores, filling, legs_fit, trenches};
+use super::layout::{bores, filling, legs_fit, trenches, u_tubes};
 use super::{Ground, wave, whole_within};
 use crate::bounds;
 use crate::document::Check;
@@ -28,10 +28,16 @@ pub(super) fn buried(
         trenches(&table.trench, check, notes).map(|trenches| Layout::Trenches { trenches })
     } else {
         let filling = filling(ground, check, notes);
+        let u_tubes = u_tubes(ground, check);
         let bores = bores(&table.bore, check, notes);
         bores
             .zip(filling)
-            .map(|(bores, filling)| Layout::Bores { bores, filling })
+            .zip(u_tubes)
+            .map(|((bores, filling), u_tubes)| Layout::Bores {
+                bores,
+                filling,
+                u_tubes,
+            })
     };
     let ground_table = table.ground.as_deref();
     let none = None;
@@ -208,6 +214,7 @@ fn tell(made: &BuriedLoop, ground: &Ground<'_>, notes: &mut Notes, findings: &mu
         Layout::Bores {
             filling: Filling::Grout { .. },
             bores,
+            ..
         } => (
             format!("{} bore(s), {:.0} m", bores.len(), total_depth_m(bores)),
             "first-order multipoles, legs exchanging heat",

@@ -5,13 +5,16 @@ use super::super::notes::Notes;
 use super::{BoreTable, Ground, TrenchTable, whole_within};
 use crate::bounds;
 use crate::document::{Check, Leaf, Section};
-use crate::source::{Bore, Filling, Layout, LoopDesign, Trench};
+use crate::source::{Bore, Filling, Layout, LoopDesign, Trench, UTubes};
 use crate::units::Length;
 
 /// Bores of a field: more is no home.
 const MOST_BORES: usize = 40;
 /// Pipes side by side in all trenches: more is no home.
 const MOST_PIPES: usize = 40;
+
+/// Part of a millimetre that is rounding.
+const ROUNDING_MM: f64 = 1e-6;
 
 pub(super) fn filling(
     ground: &Ground<'_>,
@@ -20,7 +23,6 @@ pub(super) fn filling(
 ) -> Option<Filling> {
     let table = ground.table.borehole.as_deref();
     let (no_conductivity, no_length) = (None, None);
-    one_u_tube(ground, check)?;
     if let Some(table) = table
         && let Some(leaf) = &table.resistance
     {
@@ -53,32 +55,27 @@ pub(super) fn filling(
     })
 }
 
-/// Refuses two U-tubes in a bore unless what would have to be reckoned from them is given: the formula for the resistance is that of
-/// one, and so is the pressure drop.
-fn one_u_tube(ground: &Ground<'_>, check: &mut Check) -> Option<()> {
+/// U-tubes in each bore.
+pub(super) fn u_tubes(ground: &Ground<'_>, check: &mut Check) -> Option<UTubes> {
     let Some(table) = ground.table.borehole.as_deref() else {
-        return Some(());
+        return Some(UTubes::One);
     };
     let Some(leaf) = &table.u_tubes else {
-        return Some(());
+        return Some(UTubes::One);
     };
-    let tubes = check.value(&table.u_tubes)?;
-    let given = table.resistance.is_some()
-        && ground
-            .table
-            .brine
-            .as_deref()
-            .is_some_and(|brine| brine.pump.is_some());
-    if tubes == 1 || (tubes == 2 && given) {
-        return Some(());
+    match check.value(&table.u_tubes)? {
+        1 => Some(UTubes::One),
+        2 => Some(UTubes::Two),
+        other => {
+            check.refuse(
+                &leaf.span(),
+                format!("{other} U-tubes in a bore"),
+                "1 or 2",
+                "two U-tubes are the most that are put into a bore; leave u_tubes out for one",
+            );
+            None
+        }
     }
-    check.refuse(
-        &leaf.span(),
-        format!("{tubes} U-tubes in a bore"),
-        "1, or 2 with borehole.resistance and brine.pump given: only one U-tube is reckoned from its parts",
-        "give the resistance and the pump's power from the driller or from a thermal response test, or leave u_tubes out",
-    );
-    None
 }
 
 pub(super) fn bores(
@@ -276,17 +273,25 @@ pub(super) fn legs_fit(design: &LoopDesign, ground: &Ground<'_>, check: &mut Che
         if !tube.fits() {
             fit = false;
             let outside_mm = design.pipe.outside_m * 1e3;
+            let (nearest_m, widest_m) = tube.spacing_between_m();
+            let allowed = if nearest_m <= widest_m {
+                format!(
+                    "a distance from {:.0} mm to {:.0} mm between the middles of the legs",
+                    (nearest_m * 1e3 - ROUNDING_MM).ceil(),
+                    (widest_m * 1e3 + ROUNDING_MM).floor()
+                )
+            } else {
+                "a wider bore or narrower pipes: they do not fit at any distance".to_owned()
+            };
             check.refuse(
                 &table.span(),
                 format!(
-                    "two legs of {outside_mm:.0} mm, {:.0} mm apart, in a bore of {:.0} mm",
+                    "{} legs of {outside_mm:.0} mm, those of a U-tube {:.0} mm apart, in a bore of {:.0} mm",
+                    2 * tube.count.number(),
                     tube.spacing_m * 1e3,
                     bore.radius_m * 2e3
                 ),
-                format!(
-                    "a distance from {outside_mm:.0} mm to {:.0} mm between the middles of the legs",
-                    bore.radius_m * 2e3 - outside_mm
-                ),
+                allowed,
                 "check bore.radius, pipe.outside and borehole.spacing",
             );
         }

@@ -57,18 +57,16 @@ pub(in crate::brief) struct PipeTable {
     pub conductivity: Option<Leaf<Conductivity>>,
 }
 
-/// What is in the bores: one U-tube each.
-///
-/// Two U-tubes side by side are not reckoned from their parts; with their resistance and the pump's power given they are.
+/// What is in the bores.
 #[derive(Debug, Deserialize, JsonSchema)]
 pub(in crate::brief) struct BoreholeTable {
     /// Borehole resistance from wall to brine, in place of grout and spacing.
     pub resistance: Option<Leaf<BoreholeResistance>>,
-    /// U-tubes in each bore; more than one with the resistance and the power of the pump given.
+    /// U-tubes in each bore, 1 or 2; two stand crosswise, side by side in the circuit.
     pub u_tubes: Option<Leaf<i64>>,
     /// Thermal conductivity of the grout.
     pub grout: Option<Leaf<Conductivity>>,
-    /// Distance between the middles of the two legs; else evenly placed.
+    /// Distance between the middles of the two legs of a U-tube; else evenly placed.
     pub spacing: Option<Leaf<Length>>,
 }
 

@@ -6,7 +6,7 @@ use serde::Deserialize;
 use crate::brief::clock_leaves::{ClockHour, DaySpans, Spells, WeekDay};
 use crate::brief::leaves::{ColdWater, HeatLossSource, HygieneBy, Line, SetBack};
 use crate::document::{Leaf, LeafValue, Section, Word};
-use crate::heater::GrossEfficiency;
+use crate::heater::StatedEfficiency;
 use crate::home::{Construction, EmitterKind, TappingProfile, WarmUp};
 use crate::units::{
     AirChangeRate, AirVolume, Area, Duration, Energy, HeatLossCoefficient, Power, Share,
@@ -110,7 +110,7 @@ pub(in crate::brief) struct BillsTable {
     /// Factor that brings a metered volume to the conditions of the calorific value.
     pub volume_correction: Option<Leaf<f64>>,
     /// Seasonal efficiency of today's heater, "82 % gross".
-    pub efficiency: Option<Leaf<GrossEfficiency>>,
+    pub efficiency: Option<Leaf<StatedEfficiency>>,
     /// The efficiency is within this many percentage points, with 95 % confidence.
     pub efficiency_within: Option<Leaf<Share>>,
     /// Part of the load without heating that is hot water.

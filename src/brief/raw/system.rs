@@ -12,7 +12,7 @@ use crate::brief::leaves::Capital;
 use crate::brief::lifetime::OutlayTable;
 use crate::brief::odds::ChoiceOddsTable;
 use crate::document::{Leaf, Section, Word};
-use crate::heater::GrossEfficiency;
+use crate::heater::StatedEfficiency;
 use crate::plan::ShiftRule;
 use crate::units::{
     Diffusivity, Fuel, HeatLossCoefficient, Length, LoopResistance, Mass, Power, Share,
@@ -27,7 +27,7 @@ pub(in crate::brief) struct BoilerTable {
     /// Greatest output.
     pub output: Option<Leaf<Power>>,
     /// Seasonal efficiency as measured or officially rated, "84 % gross".
-    pub efficiency: Option<Leaf<GrossEfficiency>>,
+    pub efficiency: Option<Leaf<StatedEfficiency>>,
     /// What is kept of the ideal efficiency in a home.
     pub field_factor: Option<Leaf<Share>>,
     /// The flow temperature it is set to; without one it follows the load.
@@ -110,7 +110,7 @@ pub(in crate::brief) struct SystemTable {
     /// Boiler or electric heater: greatest output.
     pub output: Option<Leaf<Power>>,
     /// Boiler: seasonal efficiency as measured or officially rated, "84 % gross".
-    pub efficiency: Option<Leaf<GrossEfficiency>>,
+    pub efficiency: Option<Leaf<StatedEfficiency>>,
     /// Boiler: the flow temperature it is set to; without one it follows the load.
     pub fixed_flow: Option<Leaf<Temperature>>,
 

@@ -30,6 +30,12 @@ RANGES = [
     (0x2212, 0x2212), (0x221A, 0x221A), (0x221E, 0x221E), (0x2248, 0x2248), (0x2260, 0x2260), (0x2264, 0x2265),
     (0x25A0, 0x25A1), (0x25B2, 0x25B2), (0x25BC, 0x25BC), (0x25CF, 0x25CF), (0xFFFD, 0xFFFD),
 ]
+# Letters of further European and many African and Asian languages in Latin, Greek and Cyrillic, accents of their own, and signs. They are in
+# the fonts that paint PNG and paper; as a web font they are a file of their own, which a page carries only where it uses one of them.
+MORE = [
+    (0x180, 0x2FF), (0x300, 0x36F), (0x370, 0x3FF), (0x400, 0x52F), (0x1E00, 0x1EFF), (0x1F00, 0x1FFF), (0x2100, 0x218F),
+    (0x2190, 0x21FF), (0x2200, 0x22FF), (0x2460, 0x24FF), (0x25A0, 0x27BF), (0x2C60, 0x2C7F), (0xA720, 0xA7FF),
+]
 
 
 def tabular_digits(font):
@@ -59,23 +65,49 @@ def rename(font, style):
         top.FamilyName, top.FullName = FAMILY, full
 
 
+def cut(source, style, codes):
+    font = TTFont(source)
+    tabular_digits(font)
+    options = subset.Options(layout_features=[], hinting=False, notdef_outline=True, desubroutinize=False,
+                             name_IDs=["*"], legacy_kern=False, drop_tables=["GSUB", "GPOS", "GDEF", "STAT", "DSIG"])
+    cutter = subset.Subsetter(options)
+    cutter.populate(unicodes=sorted(codes))
+    cutter.subset(font)
+    rename(font, style)
+    return font
+
+
+def unicode_range(codes):
+    runs = []
+    for code in sorted(codes):
+        if runs and code == runs[-1][1] + 1:
+            runs[-1][1] = code
+        else:
+            runs.append([code, code])
+    return ",".join(f"U+{low:X}" if low == high else f"U+{low:X}-{high:X}" for low, high in runs)
+
+
+def web(font, target):
+    font.flavor = "woff2"
+    out = BytesIO()
+    font.save(out)
+    target.write_bytes(base64.b64encode(out.getvalue()))
+
+
 def main(folder):
     here = Path(__file__).parent
+    spread = lambda ranges: {code for low, high in ranges for code in range(low, high + 1)}
+    usual, more = spread(RANGES), spread(MORE)
     for source, style, target in [("Inter-Regular.otf", "Regular", "regular"), ("Inter-SemiBold.otf", "Bold", "bold")]:
-        font = TTFont(Path(folder) / source)
-        tabular_digits(font)
-        options = subset.Options(layout_features=[], hinting=False, notdef_outline=True, desubroutinize=False,
-                                 name_IDs=["*"], legacy_kern=False, drop_tables=["GSUB", "GPOS", "GDEF", "STAT", "DSIG"])
-        cutter = subset.Subsetter(options)
-        cutter.populate(unicodes=[code for low, high in RANGES for code in range(low, high + 1)])
-        cutter.subset(font)
-        rename(font, style)
-        font.save(here / f"{target}.otf")
-        font.flavor = "woff2"
-        web = BytesIO()
-        font.save(web)
-        (here / f"{target}.woff2.base64").write_bytes(base64.b64encode(web.getvalue()))
-        print(style, len(font.getGlyphOrder()), "glyphs")
+        source = Path(folder) / source
+        whole = cut(source, style, usual | more)
+        whole.save(here / f"{target}.otf")
+        web(cut(source, style, usual), here / f"{target}.woff2.base64")
+        further = cut(source, style, more - usual)
+        # What a page must use to carry the second file; CSS and the program read the same line.
+        (here / "more-range.txt").write_text(unicode_range(further.getBestCmap()))
+        web(further, here / f"{target}-more.woff2.base64")
+        print(style, len(whole.getGlyphOrder()), "glyphs")
 
 
 main(sys.argv[1])

@@ -54,6 +54,8 @@ pub fn run(args: &Args) -> Result<(), Failure> {
     let left_out = leave_one_out(&sheet)?;
     let mut findings = machine.cautions();
     findings.extend(fitted.report.findings.iter().cloned());
+    let limits = machine.limits();
+    findings.extend(machine.hot_discharge(limits.lowest_source_c, f64::INFINITY));
     let at = match &args.at {
         Some(text) => Some(operating(
             machine,

@@ -3,10 +3,8 @@
 use std::ops::Range;
 use std::path::{Path, PathBuf};
 
-use crate::chart::{
-    Carpet, ChartError, DurationCurve, Marks, Picture, Spell, carpet, duration_curve,
-};
-use crate::cli::{Failure, NewFile};
+use crate::chart::{Carpet, DurationCurve, Marks, Spell, carpet, duration_curve};
+use crate::cli::{Failure, NewFile, picture_file};
 use crate::weather::{Description, Weather};
 
 /// Draws both pictures; the duration curve goes to NAME-duration.EXTENSION beside the carpet.
@@ -40,7 +38,10 @@ pub(super) fn draw(
         },
         &marks,
     );
-    Ok([file(carpet, out)?, file(curve, &beside(out))?])
+    Ok([
+        picture_file("--chart", out, carpet)?,
+        picture_file("--chart", &beside(out), curve)?,
+    ])
 }
 
 fn beside(out: &Path) -> PathBuf {
@@ -53,27 +54,6 @@ fn beside(out: &Path) -> PathBuf {
         .and_then(|extension| extension.to_str())
         .unwrap_or("svg");
     out.with_file_name(format!("{stem}-duration.{extension}"))
-}
-
-fn file(drawn: Result<Picture, ChartError>, path: &Path) -> Result<NewFile, Failure> {
-    let undrawn = |error: ChartError| Failure::Write {
-        path: path.to_owned(),
-        reason: error.to_string(),
-    };
-    let drawn = drawn.map_err(undrawn)?;
-    let extension = path.extension().map(|found| found.to_ascii_lowercase());
-    let content = match extension.as_deref().and_then(|found| found.to_str()) {
-        Some("svg") => drawn.svg().map_err(undrawn)?.into_bytes(),
-        Some("png") => drawn.png().map_err(undrawn)?,
-        _ => {
-            return Err(Failure::argument(
-                "--chart",
-                path.display().to_string(),
-                "a file that ends in .svg or .png",
-            ));
-        }
-    };
-    Ok(NewFile::new(path, content))
 }
 
 /// The weather year that holds the coldest three days, each of its days 24 hours long: a doubled hour is drawn once, a

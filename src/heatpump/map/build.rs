@@ -2,7 +2,7 @@
 
 use rayon::prelude::*;
 
-use super::{Axis, Input, Map, Range};
+use super::{Axis, FRACTION_STEPS, Input, Map, Node, Range};
 use crate::heatpump::compressor::Speeds;
 use crate::heatpump::correction::FittedMachine;
 use crate::heatpump::limits::{LEAST_DIFFERENCE_K, LOWEST_FLOW_C, Limits};
@@ -10,8 +10,6 @@ use crate::heatpump::machine::SolveError;
 
 /// Fine step in flow temperature, K, at most.
 const FLOW_STEP_K: f64 = 1.5;
-/// Fine steps from least to greatest output.
-const FRACTION_STEPS: usize = 24;
 /// Coarse Chebyshev nodes in flow temperature and in fraction.
 const FLOW_NODES: usize = 11;
 const FRACTION_NODES: usize = 9;
@@ -24,63 +22,39 @@ impl Map {
     /// # Errors
     /// [`SolveError`] where the machine cannot run inside its limits.
     pub fn build(machine: &FittedMachine, limits: &Limits) -> Result<Self, SolveError> {
-        let source = Axis {
-            low: limits.lowest_source_c.floor(),
-            step: 1.0,
-            count: (limits.highest_source_c.ceil() - limits.lowest_source_c.floor()).max(1.0)
-                as usize
-                + 1,
-        };
+        let (coldest, warmest) = (
+            limits.lowest_source_c.floor(),
+            limits.highest_source_c.ceil(),
+        );
+        let source = Axis::new(coldest, 1.0, (warmest - coldest).max(1.0) as usize + 1);
         let span = (limits.highest_flow_anywhere() - LOWEST_FLOW_C).max(1.0);
         let steps = (span / FLOW_STEP_K).ceil();
-        let flow = Axis {
-            low: LOWEST_FLOW_C,
-            step: span / steps,
-            count: steps as usize + 1,
-        };
-        let variable = machine.machine.speeds != Speeds::Fixed;
+        let flow = Axis::new(LOWEST_FLOW_C, span / steps, steps as usize + 1);
         // A machine of one speed has one output, whatever the fraction.
-        let steps = if variable { FRACTION_STEPS } else { 1 };
-        let fraction = Axis {
-            low: 0.0,
-            step: 1.0 / steps as f64,
-            count: steps + 1,
-        };
-        let coarse_fractions = chebyshev(0.0, 1.0, if variable { FRACTION_NODES } else { 1 });
-        let fraction_weights: Vec<_> = (0..fraction.count)
-            .map(|i| {
-                weights(
-                    &coarse_fractions,
-                    if variable { fraction.node(i) } else { 1.0 },
-                )
-            })
+        let variable = machine.machine.speeds != Speeds::Fixed;
+        let fractions = chebyshev(0.0, 1.0, if variable { FRACTION_NODES } else { 1 });
+        let fraction_weights: Vec<_> = (0..=FRACTION_STEPS)
+            .map(|k| weights(&fractions, k as f64 / FRACTION_STEPS as f64))
             .collect();
         // Rows are solved side by side; they and their first refusal stand in order all the same.
-        let rows: Vec<Result<Row, SolveError>> = (0..source.count)
+        let rows: Vec<Result<Vec<Node>, SolveError>> = (0..source.count)
             .into_par_iter()
             .map(|i| {
-                let across = (&coarse_fractions[..], &fraction_weights[..]);
+                let across = (&fractions[..], &fraction_weights[..]);
                 row(machine, limits, source.node(i), &flow, across)
             })
             .collect();
-        let mut map = Self {
+        let mut nodes = Vec::with_capacity(source.count * flow.count);
+        for row in rows {
+            nodes.extend(row?);
+        }
+        Ok(Self {
             source,
             flow,
-            fraction,
-            ranges: Vec::with_capacity(source.count * flow.count),
-            inputs: Vec::with_capacity(source.count * flow.count * fraction.count),
-        };
-        for row in rows {
-            let (ranges, inputs) = row?;
-            map.ranges.extend(ranges);
-            map.inputs.extend(inputs);
-        }
-        Ok(map)
+            nodes,
+        })
     }
 }
-
-/// Ranges and inputs at one source temperature, by flow temperature.
-type Row = (Vec<Range>, Vec<Input>);
 
 /// One source temperature: solve at coarse fractions, refine by the weights of the fine ones.
 fn row(
@@ -89,7 +63,7 @@ fn row(
     source_c: f64,
     flow: &Axis,
     (fractions, fraction_weights): (&[f64], &[Vec<f64>]),
-) -> Result<Row, SolveError> {
+) -> Result<Vec<Node>, SolveError> {
     let (low, high) = flows_of_row(limits, source_c, flow);
     let flows = chebyshev(low, high, FLOW_NODES);
     let mut greatest = Vec::with_capacity(flows.len());
@@ -110,29 +84,30 @@ fn row(
             ));
         }
     }
-    let mut row = (Vec::new(), Vec::new());
-    for j in 0..flow.count {
+    let node = |j: usize| {
         let along = weights(&flows, flow.node(j).clamp(low, high));
         let dot = |values: &[f64]| along.iter().zip(values).map(|(w, v)| w * v).sum();
-        row.0.push(Range {
-            greatest_kw: dot(&greatest),
-            least_kw: dot(&least),
-        });
-        for across in fraction_weights {
-            let (mut electric, mut speed) = (0.0, 0.0);
-            for (row, w) in inputs.chunks_exact(fractions.len()).zip(&along) {
-                for ((e, s), v) in row.iter().zip(across) {
-                    electric += w * v * e;
-                    speed += w * v * s;
+        Node {
+            range: Range {
+                greatest_kw: dot(&greatest),
+                least_kw: dot(&least),
+            },
+            inputs: std::array::from_fn(|k| {
+                let mut input = Input {
+                    electric_per_heat: 0.0,
+                    speed_share: 0.0,
+                };
+                for (row, w) in inputs.chunks_exact(fractions.len()).zip(&along) {
+                    for ((electric, speed), v) in row.iter().zip(&fraction_weights[k]) {
+                        input.electric_per_heat += w * v * electric;
+                        input.speed_share += w * v * speed;
+                    }
                 }
-            }
-            row.1.push(Input {
-                electric_per_heat: electric,
-                speed_share: speed,
-            });
+                input
+            }),
         }
-    }
-    Ok(row)
+    };
+    Ok((0..flow.count).map(node).collect())
 }
 
 /// Flow temperatures between which a row is solved: what its own and its neighbours' cells can be asked for. Outside it the

@@ -4,7 +4,7 @@
 //! nodes, so they are worked out while they are added: three more tables read from memory would cost more than they say. Nothing is
 //! fitted or solved again, and the hours find a map like any other.
 
-use super::{Input, Map, Range};
+use super::{FRACTION_STEPS, Input, Map, Node, Range};
 use crate::heatpump::limits::LEAST_DIFFERENCE_K;
 
 /// How far a sheet may be off, each as a multiple of what it says; 1 where it is right. None of them moves the machine at its rated
@@ -63,40 +63,44 @@ impl Pivot {
 impl Map {
     /// The map plus so many times each difference map.
     pub(in crate::heatpump) fn doubted(&self, doubts: &SheetDoubts, pivot: &Pivot) -> Self {
-        let mut map = self.clone();
-        let n = self.fraction.count;
         let [lift, part, cold] = [
             doubts.electricity_at_high_lift - 1.0,
             doubts.electricity_at_part_load - 1.0,
             doubts.output_in_cold - 1.0,
         ];
-        let columns = map.ranges.iter_mut().zip(map.inputs.chunks_exact_mut(n));
-        let read = self.ranges.iter().zip(self.inputs.chunks_exact(n));
-        for (node, ((range, inputs), (before, row))) in columns.zip(read).enumerate() {
-            let source_c = self.source.node(node / self.flow.count);
-            let flow_c = self.flow.node(node % self.flow.count);
+        let nodes = self.nodes.iter().enumerate().map(|(place, node)| {
+            let source_c = self.source.node(place / self.flow.count);
+            let flow_c = self.flow.node(place % self.flow.count);
             let times = 1.0 + lift * pivot.of_lift(source_c, flow_c) + part;
             let grows = cold * pivot.of_cold(source_c);
-            let width = before.greatest_kw - before.least_kw;
-            *range = with_greatest_times(*before, 1.0 + grows);
+            let width = node.range.greatest_kw - node.range.least_kw;
             // The same fraction is now another output: so much further along the fraction of before lies what it took.
             let further = if width > 0.0 {
-                grows * before.greatest_kw / width
+                grows * node.range.greatest_kw / width
             } else {
                 0.0
             };
-            for (k, (input, was)) in inputs.iter_mut().zip(row).enumerate() {
-                let fraction = self.fraction.node(k);
+            let input = |k: usize| {
+                let fraction = k as f64 / FRACTION_STEPS as f64;
+                let mut input = node.inputs[k];
                 input.electric_per_heat *= times - part * fraction;
                 if further != 0.0 {
-                    let slope = slope(row, k, self.fraction.step);
+                    let slope = slope(&node.inputs, k);
                     let step = fraction * further;
                     input.electric_per_heat += step * slope.electric_per_heat;
-                    input.speed_share = was.speed_share + step * slope.speed_share;
+                    input.speed_share += step * slope.speed_share;
                 }
+                input
+            };
+            Node {
+                range: with_greatest_times(node.range, 1.0 + grows),
+                inputs: std::array::from_fn(input),
             }
+        });
+        Self {
+            nodes: nodes.collect(),
+            ..*self
         }
-        map
     }
 }
 
@@ -114,9 +118,9 @@ fn with_greatest_times(range: Range, times: f64) -> Range {
 }
 
 /// Slope of a row over its fraction: straight through both neighbours, through the one there is at an end.
-fn slope(row: &[Input], k: usize, step: f64) -> Input {
+fn slope(row: &[Input], k: usize) -> Input {
     let (below, above) = (k.saturating_sub(1), (k + 1).min(row.len() - 1));
-    let span = (above - below).max(1) as f64 * step;
+    let span = (above - below).max(1) as f64 / FRACTION_STEPS as f64;
     Input {
         electric_per_heat: (row[above].electric_per_heat - row[below].electric_per_heat) / span,
         speed_share: (row[above].speed_share - row[below].speed_share) / span,

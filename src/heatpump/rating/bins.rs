@@ -5,9 +5,9 @@ use crate::heatpump::idle::IdlePower;
 
 /// Efficiency of electricity generation in EU 811/2013 and 813/2013.
 const PRIMARY_ENERGY: f64 = 2.5;
-/// Deduction for temperature controls, points of percent (methods §1, \[from memory\]).
+/// Deduction for temperature controls, points of percent (Regulation (EU) 813/2013 \[from memory\]).
 const CONTROL_PERCENT: f64 = 3.0;
-/// Deduction for brine and ground-water pumps, points of percent (methods §1, \[from memory\]).
+/// Deduction for brine and ground-water pumps, points of percent (Regulation (EU) 813/2013 \[from memory\]).
 const GROUND_PUMP_PERCENT: f64 = 5.0;
 
 /// What a machine gives at one outdoor temperature of the rating.
@@ -193,7 +193,7 @@ fn line(points: &[RatedPoint], at: f64, value: impl Fn(&RatedPoint) -> f64) -> f
 mod tests {
     use super::*;
 
-    /// The regression example of EN 14825 for a fixed-capacity machine (inputs \[from memory\], result computed; methods §1).
+    /// The regression example of EN 14825 for a fixed-capacity machine (inputs \[from memory\], result computed).
     /// Its COP is corrected at the points; bin by bin would give 3.625 and 3.674 (`tests/reference/rating.py`).
     #[test]
     fn the_worked_example_comes_out_to_its_printed_digits() {

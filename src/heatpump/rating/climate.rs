@@ -61,7 +61,7 @@ pub struct ModeHours {
     pub off: f64,
 }
 
-/// Bin hours of the average climate, −10 to 15 °C (methods §1, read in the regulation).
+/// Bin hours of the average climate, −10 to 15 °C (Regulation (EU) 813/2013, read there).
 const AVERAGE: [u16; 26] = [
     1, 25, 23, 24, 27, 68, 91, 89, 165, 173, 240, 280, 320, 357, 356, 303, 330, 326, 348, 335, 315,
     215, 169, 151, 105, 74,
@@ -127,7 +127,7 @@ impl Climate {
             .map(move |(i, hours)| (coldest + i as f64, f64::from(*hours)))
     }
 
-    /// Hours of the idle modes, heating only (methods §1, \[from memory\]).
+    /// Hours of the idle modes, heating only (EN 14825 \[from memory\]).
     pub fn mode_hours(self) -> ModeHours {
         let [thermostat_off, standby, crankcase, off] = match self {
             Self::Average => [178.0, 0.0, 3850.0, 3672.0],
@@ -162,7 +162,7 @@ impl Application {
     pub const ALL: [Self; 4] = [Self::Low, Self::Intermediate, Self::Medium, Self::High];
 
     /// Flow temperature at an outdoor temperature, °C, for a machine whose flow temperature follows the weather: the
-    /// variable-outlet columns of EN 14825 (methods §1, \[from memory\]; colder and warmer intermediate from memory besides, colder
+    /// variable-outlet columns of EN 14825 (\[from memory\]; colder and warmer intermediate from memory besides, colder
     /// high taken from the average column at the same part-load ratio). Straight lines between, level in the cold,
     /// continued above 12 °C as the method continues COP.
     pub fn flow_c(self, climate: Climate, outdoor_c: f64) -> f64 {
@@ -267,7 +267,7 @@ fn straight_lines(curve: Curve, at: f64) -> f64 {
 mod tests {
     use super::*;
 
-    /// EU 811/2013 and 813/2013: total bin hours and equivalent full-load hours of the three climates (methods §1, read in
+    /// EU 811/2013 and 813/2013: total bin hours and equivalent full-load hours of the three climates (read in
     /// the regulation: 4910/6446/3590 and 2066/2465/1336).
     #[test]
     fn bin_hours_are_those_of_the_regulation() {
@@ -288,7 +288,7 @@ mod tests {
         }
     }
 
-    /// Active hours, thermostat-off and off add up to the year in each climate (methods §1, computed).
+    /// Active hours, thermostat-off and off add up to the year in each climate (8760 h, by hand).
     #[test]
     fn modes_and_bins_fill_the_year() {
         for climate in Climate::ALL {
@@ -302,7 +302,7 @@ mod tests {
         }
     }
 
-    /// EU 813/2013: medium-temperature application, average climate, outlet 52 °C at −7 °C (methods §1).
+    /// EU 813/2013: medium-temperature application, average climate, outlet 52 °C at −7 °C.
     #[test]
     fn flow_temperatures_of_the_applications() {
         assert_eq!(Application::Medium.flow_c(Climate::Average, -7.0), 52.0);

@@ -4,7 +4,7 @@ use super::raw::RawTested;
 use super::{Drive, Limits, SpeedAt, TestedPoint};
 use crate::document::{Check, Leaf, Section};
 
-/// Share of the Carnot COP that a whole machine reaches at most; 35–50 % is usual (methods §13).
+/// Share of the Carnot COP that a whole machine reaches at most; 35–50 % is usual \[from memory\].
 const GREATEST_CARNOT_SHARE: f64 = 0.70;
 /// Share of the Carnot COP below which a number is a slip.
 const LEAST_CARNOT_SHARE: f64 = 0.15;

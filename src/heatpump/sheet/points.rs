@@ -56,7 +56,7 @@ pub fn default_spread_k(flow_c: f64) -> f64 {
 mod tests {
     use super::*;
 
-    /// EN 14511 standard rating conditions: water 30/35, 40/45, 47/55, 55/65 °C (issue; 30/35 and 47/55 also in methods §1).
+    /// EN 14511 standard rating conditions: water 30/35, 40/45, 47/55, 55/65 °C (30/35 and 47/55 also in Regulation (EU) 813/2013).
     #[test]
     fn default_spreads() {
         for (flow, spread) in [

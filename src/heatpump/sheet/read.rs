@@ -36,7 +36,7 @@ const CURRENT_A: Bound = Bound {
 /// Superheat and subcooling of a sheet that states none, K; common practice, no source.
 const USUAL_SUPERHEAT_K: f64 = 5.0;
 const USUAL_SUBCOOLING_K: f64 = 5.0;
-/// Degradation coefficient Cc of a sheet that states none (EN 14825, methods §1).
+/// Degradation coefficient Cc of a sheet that states none (EN 14825).
 const USUAL_CYCLING_COEFFICIENT: f64 = 0.9;
 
 /// Reads and checks everything; nothing when anything needed is missing, in which case `check` knows why.
@@ -107,7 +107,7 @@ pub(super) fn read_sheet(file: &str, raw: &RawSheet, check: &mut Check) -> Optio
         assumed.push(Assumed {
             name: "idle_power",
             value: format!("{:.0} W in every mode", idle.standby_kw * 1000.0),
-            from: "31 W measured on a 5 kW unit (methods §13), scaled with output",
+            from: "31 W measured on a 5 kW unit, scaled with output: common practice, no source",
         });
     }
     Some(Sheet {

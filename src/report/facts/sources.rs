@@ -2,6 +2,7 @@
 
 use serde_json::{Value, json};
 
+use super::names::{plain_name, plain_value};
 use crate::answer::Estimate;
 use crate::report::pictures::Material;
 
@@ -12,8 +13,8 @@ pub(super) fn assumptions(estimate: &Estimate) -> Value {
         .iter()
         .map(|a| {
             json!({
-                "name": a.name,
-                "value": a.value,
+                "name": plain_name(&a.name),
+                "value": plain_value(&a.value),
                 "kind": source_kind(&a.from),
                 "from": a.from.strip_prefix("default: ").unwrap_or(&a.from),
             })

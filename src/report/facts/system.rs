@@ -19,6 +19,7 @@ pub(super) fn system(material: &Material<'_>, i: usize) -> Value {
         facts.insert(name.to_owned(), value);
     };
     put("number", json!(i + 1));
+    put("mark", json!(mark(answer)));
     put("indoor_c", json!(contender.indoor_c));
     put(
         "emitters",
@@ -77,7 +78,8 @@ pub(super) fn system(material: &Material<'_>, i: usize) -> Value {
     {
         put("fixed_flow_c", json!(flow_c));
     }
-    if let (Some(capital), Some(saving)) = (answer.capital, answer.saving)
+    if let (Some(capital), Some(saving), None) =
+        (answer.capital, answer.saving, &answer.leaves_cold)
         && saving > ABOUT_THE_SAME * (answer.cost + saving).abs()
     {
         put("years_of_saving", json!(capital / saving));
@@ -88,6 +90,11 @@ pub(super) fn system(material: &Material<'_>, i: usize) -> Value {
     );
     put("design_flow_c", json!(answer.design.heater_flow_c));
     put("design_output_kw", json!(answer.design.output_kw));
+    put("design_limited_by", json!(answer.design.limited_by));
+    put(
+        "design_carried",
+        json!(1.0 + answer.design.margin_percent / 100.0),
+    );
     put("water_l_per_min", json!(answer.design.water_l_per_min));
     if let Some(store) = &answer.store {
         put("usable_l", json!(store.usable_l));
@@ -103,6 +110,12 @@ pub(super) fn system(material: &Material<'_>, i: usize) -> Value {
         put("levers", json!(levers));
     }
     Value::Object(facts)
+}
+
+/// What stands behind a name among others; nothing where rooms and water are kept warm.
+pub(super) fn mark(answer: &SystemAnswer) -> String {
+    let name = answer.name();
+    name.strip_prefix(&answer.label).unwrap_or("").to_owned()
 }
 
 /// The meters, by what they count, and what their bands are made of.

@@ -408,7 +408,7 @@ impl Pen<'_, '_> {
                         };
                         let at = (label.area.left, label.at.1);
                         // A space after each label keeps them apart when they are read out.
-                        let text = format!("{} ", label.text);
+                        let text = chart::printable(&label.text, chart::UNPRINTABLE) + " ";
                         self.text(&text, &look, label.size, label.colour, at);
                     }
                 }

@@ -58,7 +58,7 @@ pub(super) struct Row {
 
 impl Row {
     /// The height of the row, taking the room above it.
-    fn whole(&self) -> f64 {
+    pub(super) fn whole(&self) -> f64 {
         self.before + self.height
     }
 
@@ -99,10 +99,15 @@ impl Row {
         }
     }
 
+    /// Whether it is one picture; several side by side keep their size.
     fn is_picture(&self) -> bool {
-        self.inks
-            .iter()
-            .any(|placed| matches!(placed.ink, Ink::Picture { .. }))
+        matches!(
+            self.inks.as_slice(),
+            [Placed {
+                ink: Ink::Picture { .. },
+                ..
+            }]
+        )
     }
 }
 

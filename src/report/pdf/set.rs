@@ -32,7 +32,13 @@ pub(super) struct Style {
 }
 
 impl Style {
-    const fn new(size: f64, leading: f64, before: f64, weight: Weight, colour: Colour) -> Self {
+    pub(super) const fn new(
+        size: f64,
+        leading: f64,
+        before: f64,
+        weight: Weight,
+        colour: Colour,
+    ) -> Self {
         Self {
             size,
             leading,
@@ -55,8 +61,7 @@ const INDENT: f64 = 13.0;
 const BEFORE_ITEM: f64 = 2.6;
 /// Widest line of running text, points: some 85 signs.
 const MEASURE: f64 = 410.0;
-/// Tallest picture of the first page and of the others, points.
-const TALLEST_FIRST: f64 = 172.0;
+/// Tallest picture, points.
 const TALLEST: f64 = 430.0;
 /// Widest share of the column that a picture takes.
 const WIDEST: f64 = 0.97;
@@ -67,19 +72,42 @@ pub(super) struct Setter<'a> {
     pub structure: Structure,
     /// Width of the column.
     pub width: f64,
-    pictures: BTreeMap<&'a str, (usize, &'a Drawn)>,
+    pub(super) pictures: BTreeMap<&'a str, (usize, &'a Drawn)>,
+    /// Size of what is set, as a share of its usual size.
+    pub(super) scale: f64,
 }
 
 impl<'a> Setter<'a> {
-    pub(super) fn new(width: f64, drawn: &'a [Drawn]) -> Self {
+    /// `scale` is that of what is set until `usual_size`.
+    pub(super) fn new(width: f64, drawn: &'a [Drawn], scale: f64) -> Self {
         let pictures = drawn.iter().enumerate();
         Self {
             rows: Vec::new(),
             structure: Structure::default(),
             width,
+            scale,
             pictures: pictures
                 .map(|(i, drawn)| (drawn.name.as_str(), (i, drawn)))
                 .collect(),
+        }
+    }
+
+    /// Sets what follows in its usual size.
+    pub(super) fn usual_size(&mut self) {
+        self.scale = 1.0;
+    }
+
+    /// Height of all that has been set.
+    pub(super) fn height(&self) -> f64 {
+        self.rows.iter().map(Row::whole).sum()
+    }
+
+    pub(super) fn scaled(&self, style: Style) -> Style {
+        Style {
+            size: style.size * self.scale,
+            leading: style.leading * self.scale,
+            before: style.before * self.scale,
+            ..style
         }
     }
 
@@ -218,7 +246,8 @@ impl<'a> Setter<'a> {
                     figures,
                 },
             ),
-            Block::Picture { name, caption } => self.picture(name, caption, first_page),
+            Block::Abreast(names) => self.abreast(names),
+            Block::Picture { name, caption } => self.picture(name, caption),
         }
     }
 
@@ -242,6 +271,7 @@ impl<'a> Setter<'a> {
 
     /// Sets running text in the part that is open. The first two and the last two lines of a paragraph stay together.
     fn text(&mut self, text: &[Span], style: Style, indent: f64, room: f64) {
+        let style = self.scaled(style);
         let set = lines(text, style.size, style.weight, room - indent);
         let count = set.len();
         let mut rows = Vec::with_capacity(count);
@@ -308,6 +338,7 @@ impl<'a> Setter<'a> {
             self.text(item, style, INDENT, room);
             self.structure.close();
             self.structure.close();
+            let style = self.scaled(style);
             if let Some(row) = self.rows.get_mut(at) {
                 row.inks.insert(
                     0,
@@ -332,76 +363,13 @@ impl<'a> Setter<'a> {
         self.structure.close();
     }
 
-    /// The figures of the first page side by side, each with its number large.
-    fn key_figures(&mut self, items: &[Text]) {
-        const GAP: f64 = 6.0;
-        const PAD: f64 = 7.0;
-        const NUMBER: Style = Style::new(14.5, 19.0, 0.0, Weight::Bold, colours::ACCENT);
-        const WORDS: Style = Style::new(8.5, 11.2, 0.0, Weight::Regular, colours::INK);
-        let count = items.len().max(1) as f64;
-        let width = (self.width - GAP * (count - 1.0)) / count;
-        let inner = width - 2.0 * PAD;
-        let set: Vec<_> = items
-            .iter()
-            .map(|item| {
-                let (number, words): (Vec<Span>, Vec<Span>) =
-                    item.iter().cloned().partition(|span| span.strong);
-                let number = lines(&number, NUMBER.size, NUMBER.weight, inner);
-                (number, lines(&words, WORDS.size, WORDS.weight, inner))
-            })
-            .collect();
-        let tall = |(number, words): &(Vec<_>, Vec<_>)| {
-            number.len() as f64 * NUMBER.leading + words.len() as f64 * WORDS.leading
-        };
-        let height = set.iter().map(tall).fold(0.0, f64::max) + 2.0 * PAD;
-        let mut row = Row {
-            before: 8.0,
-            height,
-            ..Row::default()
-        };
-        self.structure.open(Kind::List { numbered: false });
-        for (i, (number, words)) in set.iter().enumerate() {
-            let left = i as f64 * (width + GAP);
-            row.inks.push(Placed {
-                x: left,
-                y: 0.0,
-                leaf: None,
-                ink: Ink::Fill {
-                    width,
-                    height,
-                    colour: colours::WASH,
-                },
-            });
-            self.structure.open(Kind::Item);
-            self.structure.open(Kind::ItemBody);
-            let mut y = PAD;
-            let mut leaves = self.leaves();
-            for (texts, style) in [(number, NUMBER), (words, WORDS)] {
-                for line in texts {
-                    let at = (left + PAD, y + style.leading * 0.76);
-                    row.write(line, at, style.size, style.colour, &mut leaves);
-                    y += style.leading;
-                }
-            }
-            drop(leaves);
-            self.structure.close();
-            self.structure.close();
-        }
-        self.structure.close();
-        self.rows.push(row);
-    }
-
-    fn picture(&mut self, name: &str, caption: &[Span], first_page: bool) {
+    fn picture(&mut self, name: &str, caption: &[Span]) {
         let Some(&(index, drawn)) = self.pictures.get(name) else {
             return;
         };
         let canvas = drawn.picture.canvas();
-        let tallest = if first_page { TALLEST_FIRST } else { TALLEST };
-        let scale = (self.width * WIDEST / WIDTH).min(tallest / canvas.bottom);
-        self.structure.open(Kind::Figure(format!(
-            "{}. {}",
-            drawn.picture.title, drawn.picture.alt
-        )));
+        let scale = (self.width * WIDEST / WIDTH).min(TALLEST / canvas.bottom);
+        self.structure.open(Kind::Figure(said(drawn)));
         let leaf = self.structure.leaf();
         self.structure.close();
         self.rows.push(Row {
@@ -420,4 +388,9 @@ impl<'a> Setter<'a> {
         self.text(caption, CAPTION, 0.0, MEASURE);
         self.structure.close();
     }
+}
+
+/// What is read out in place of a picture.
+pub(super) fn said(drawn: &Drawn) -> String {
+    format!("{}. {}", drawn.picture.title, drawn.picture.alt)
 }

@@ -1,32 +1,34 @@
 //! Greenhouse gas of the systems.
 
-use super::{Drawn, Material, drawn};
+use super::money::lifetime_in_front;
+use super::{Drawn, Material, drawn, in_front, some_of_them};
 use crate::chart::{self, ChartError};
 use crate::study::Contender;
 use crate::year::Ledger;
 
 pub(super) fn carbon(material: &Material<'_>) -> Result<Drawn, ChartError> {
-    let sums = material.case.contenders.iter().zip(material.ledgers);
     let years = material.case.site.years.len() as f64;
-    let systems = sums
-        .zip(&material.estimate.systems)
-        .map(|((contender, ledger), s)| {
-            let fuel_kg = fuel_carbon_kg(contender, ledger) / years;
-            chart::SystemCarbon {
-                label: s.label.clone(),
-                today: s.today,
-                electricity_kg: s.carbon_kg - fuel_kg,
-                fuel_kg,
-                refrigerant_kg: 0.0,
-            }
-        });
+    let systems = in_front(material.estimate).into_iter().map(|i| {
+        let (contender, ledger) = (&material.case.contenders[i], &material.ledgers[i]);
+        let s = &material.estimate.systems[i];
+        let fuel_kg = fuel_carbon_kg(contender, ledger) / years;
+        chart::SystemCarbon {
+            label: s.label.clone(),
+            today: s.today,
+            electricity_kg: s.carbon_kg - fuel_kg,
+            fuel_kg,
+            refrigerant_kg: 0.0,
+        }
+    });
     let data = chart::CarbonBySystem {
         systems: systems.collect(),
         scope: material.estimate.carbon_scope.clone().unwrap_or_default(),
     };
     let picture = chart::carbon_by_system(&data, &material.locale.marks)?;
-    let caption =
-        "Greenhouse gas of a year, by where it comes from. Refrigerant that may leak is not in it.";
+    let caption = format!(
+        "Greenhouse gas of a year, by where it comes from. Refrigerant that may leak is not in it.{}",
+        some_of_them(material)
+    );
     Ok(drawn("carbon", caption, picture))
 }
 
@@ -45,10 +47,10 @@ fn fuel_carbon_kg(contender: &Contender, ledger: &Ledger) -> f64 {
 
 /// Greenhouse gas of each year, where the years are counted.
 pub(super) fn carbon_by_year(material: &Material<'_>) -> Result<Option<Drawn>, ChartError> {
-    let Some(lifetime) = &material.estimate.lifetime else {
+    if material.estimate.lifetime.is_none() {
         return Ok(None);
-    };
-    let systems = lifetime.systems.iter().map(|system| chart::SystemYears {
+    }
+    let systems = lifetime_in_front(material).map(|system| chart::SystemYears {
         label: system.label.clone(),
         today: system.today,
         // Year 0 is the day on which things are bought; nothing has been burnt then.
@@ -65,6 +67,9 @@ pub(super) fn carbon_by_year(material: &Material<'_>) -> Result<Option<Drawn>, C
         systems: systems.collect(),
     };
     let picture = chart::carbon_by_year(&data, &material.locale.marks)?;
-    let caption = "Greenhouse gas of each year, counted from the day on which a choice is put in.";
+    let caption = format!(
+        "Greenhouse gas of each year, counted from the day on which a choice is put in.{}",
+        some_of_them(material)
+    );
     Ok(Some(drawn("carbon-by-year", caption, picture)))
 }

@@ -1,24 +1,25 @@
 //! What a machine gives and what is asked of it.
 
-use super::{Drawn, Material, drawn, not_met, of_the_year, year_rows};
+use super::{Drawn, Material, drawn, in_front, not_met, of_the_year, some_of_them, year_rows};
 use crate::chart::{self, ChartError};
 use crate::source::Memory;
 use crate::study::output_range_kw;
 use crate::year::Row;
 
 pub(super) fn cop_year(material: &Material<'_>) -> Result<Option<Drawn>, ChartError> {
-    let machines = material
-        .case
-        .contenders
-        .iter()
-        .zip(material.ledgers)
-        .zip(&material.estimate.systems)
-        .filter(|((contender, _), _)| contender.system.heating.machine().is_some());
+    let contenders = &material.case.contenders;
+    let machines = in_front(material.estimate)
+        .into_iter()
+        .filter(|&i| contenders[i].system.heating.machine().is_some());
     let systems: Vec<_> = machines
-        .map(|((_, ledger), answer)| chart::CopSystem {
-            label: answer.label.clone(),
-            hours: ledger.rows.iter().filter_map(cop_of_hour).collect(),
-            year: answer.spf_h2.map(|spf| ("SPF H2".to_owned(), spf)),
+        .map(|i| {
+            let answer = &material.estimate.systems[i];
+            let rows = material.ledgers[i].rows.iter();
+            chart::CopSystem {
+                label: answer.label.clone(),
+                hours: rows.filter_map(cop_of_hour).collect(),
+                year: answer.spf_h2.map(|spf| ("SPF H2".to_owned(), spf)),
+            }
         })
         .collect();
     if systems.iter().all(|system| system.hours.is_empty()) {
@@ -27,6 +28,7 @@ pub(super) fn cop_year(material: &Material<'_>) -> Result<Option<Drawn>, ChartEr
     let picture = chart::cop_year(&chart::CopYear { systems }, &material.locale.marks)?;
     let caption = "Heat to the rooms for each unit of electricity in every hour: the colder it is outside and the hotter the water \
 must be, the less. The figure of the year (SPF H2) also holds hot water and the machine at rest.";
+    let caption = format!("{caption}{}", some_of_them(material));
     Ok(Some(drawn("cop-year", caption, picture)))
 }
 

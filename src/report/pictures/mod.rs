@@ -4,7 +4,9 @@
 
 mod carbon;
 mod cold;
+mod first;
 mod flow;
+mod levers;
 mod machine;
 mod money;
 mod signature;
@@ -18,6 +20,7 @@ use crate::signature::Signature;
 use crate::study::{Case, Outcome};
 use crate::year::{Flags, Heating, Ledger, Row};
 
+pub use levers::study_pictures;
 pub use signature::signature_picture;
 
 /// A picture with the name of its file and the sentence that stands below it.
@@ -77,11 +80,12 @@ pub struct Material<'a> {
 /// # Errors
 /// When a figure cannot be drawn.
 pub fn pictures(material: &Material<'_>) -> Result<Vec<Drawn>, ChartError> {
-    let mut all = vec![
+    let mut all = first::glances(material)?;
+    all.extend([
         money::annual_cost(material)?,
         carbon::carbon(material)?,
         money::monthly(material)?,
-    ];
+    ]);
     all.extend(money::spend(material)?);
     all.extend(carbon::carbon_by_year(material)?);
     all.extend(signature::signature(material)?);
@@ -89,6 +93,7 @@ pub fn pictures(material: &Material<'_>) -> Result<Vec<Drawn>, ChartError> {
     all.extend(weather::weather_duration(material)?);
     all.extend(weather::electricity_carpet(material)?);
     all.extend(machine::cop_year(material)?);
+    all.extend(what_moves(material)?);
     for system in 0..material.case.contenders.len() {
         all.extend(flow::energy_flow(material, system)?);
         if material.case.contenders[system]
@@ -106,6 +111,72 @@ pub fn pictures(material: &Material<'_>) -> Result<Vec<Drawn>, ChartError> {
         }
     }
     Ok(all)
+}
+
+/// What moves the saving: the emitters of the cheapest heat pump, everything else of the cheapest choice.
+fn what_moves(material: &Material<'_>) -> Result<Vec<Drawn>, ChartError> {
+    let Material {
+        estimate, locale, ..
+    } = material;
+    let (currency, marks) = (&estimate.currency, &locale.marks);
+    let mut choices: Vec<_> = estimate.systems.iter().enumerate().skip(1).collect();
+    choices.sort_by(|a, b| a.1.cost.total_cmp(&b.1.cost));
+    let looked_at = choices.into_iter().filter_map(|(i, system)| {
+        let found = estimate.what_if.iter().find(|w| w.label == system.label)?;
+        Some((i + 1, system, found))
+    });
+    let looked_at: Vec<_> = looked_at.collect();
+    let mut all = Vec::new();
+    if let Some((number, system, found)) = looked_at.first().filter(|one| !one.2.swings.is_empty())
+    {
+        let of = (*number, system.label.as_str());
+        let saving = system.saving.unwrap_or(0.0);
+        all.push(levers::swings(of, saving, &found.swings, currency, marks)?);
+    }
+    let machine = looked_at
+        .iter()
+        .find_map(|(number, system, found)| Some((*number, system, found.emitters.as_ref()?)));
+    if let Some((number, system, steps)) = machine {
+        let of = (number, system.label.as_str());
+        let found = estimate.break_even.get(&system.label);
+        let break_even = found.map_or(&[][..], Vec::as_slice);
+        all.push(levers::emitters(of, steps, break_even, currency, marks)?);
+    }
+    Ok(all)
+}
+
+/// Systems that stand in front, today's among them.
+const IN_FRONT: usize = 5;
+
+/// The systems that pictures of several and the pages of each are of: all where they are few, else today's and the cheapest choices,
+/// in the order of the brief. Tables hold every system.
+pub fn in_front(estimate: &Estimate) -> Vec<usize> {
+    let costs: Vec<_> = estimate.systems.iter().map(|s| (s.today, s.cost)).collect();
+    cheapest(&costs)
+}
+
+fn cheapest(costs: &[(bool, f64)]) -> Vec<usize> {
+    let mut order: Vec<usize> = (0..costs.len()).collect();
+    order.sort_by(|&a, &b| {
+        let key = |i: usize| (!costs[i].0, costs[i].1);
+        let (a, b) = (key(a), key(b));
+        a.0.cmp(&b.0).then(a.1.total_cmp(&b.1))
+    });
+    order.truncate(IN_FRONT);
+    order.sort_unstable();
+    order
+}
+
+/// What a caption says where a picture does not show every system.
+fn some_of_them(material: &Material<'_>) -> String {
+    let shown = in_front(material.estimate).len();
+    if shown == material.estimate.systems.len() {
+        return String::new();
+    }
+    format!(
+        " Shown are today’s system and the {} cheapest choices.",
+        shown - 1
+    )
 }
 
 /// A picture without a narrow form.
@@ -161,5 +232,19 @@ fn of_the_year(material: &Material<'_>) -> String {
             format!(" of {year}, the coldest of {} years", site.years.len())
         }
         _ => " of the year".to_owned(),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn today_and_the_cheapest_stand_in_front() {
+        let three = [(false, 3.0), (true, 9.0), (false, 1.0)];
+        assert_eq!(cheapest(&three), [0, 1, 2]);
+        let mut many: Vec<_> = (0..9).map(|i| (false, f64::from(10 - i))).collect();
+        many[0].0 = true;
+        assert_eq!(cheapest(&many), [0, 5, 6, 7, 8]);
     }
 }

@@ -1,33 +1,15 @@
 //! What the systems cost.
 
-use super::{Bar, BarPart, Drawn, Material, drawn};
-use crate::chart::{self, ChartError};
+use super::{Bar, BarPart, Drawn, Material, drawn, in_front, some_of_them};
+use crate::answer::lifetime::{LifetimeAnswer, SystemLifetime};
+use crate::chart::{self, ChartError, Marks};
 use crate::locale::MONTHS;
-
-/// Systems that the first page has room for, today's among them.
-const FIRST_PAGE: usize = 6;
-
-/// Which systems the first page shows: all where there is room, else today's and the cheapest choices, in the order of the brief.
-fn shown_first(costs: &[(bool, f64)]) -> Vec<usize> {
-    let mut order: Vec<usize> = (0..costs.len()).collect();
-    order.sort_by(|&a, &b| {
-        let key = |i: usize| (!costs[i].0, costs[i].1);
-        let (a, b) = (key(a), key(b));
-        a.0.cmp(&b.0).then(a.1.total_cmp(&b.1))
-    });
-    order.truncate(FIRST_PAGE);
-    order.sort_unstable();
-    order
-}
 
 pub(super) fn annual_cost(material: &Material<'_>) -> Result<Drawn, ChartError> {
     let estimate = material.estimate;
-    let costs: Vec<_> = estimate.systems.iter().map(|s| (s.today, s.cost)).collect();
-    let shown = shown_first(&costs);
-    let left_out = costs.len() - shown.len();
-    let systems = shown.iter().map(|&i| &estimate.systems[i]);
+    let systems = in_front(estimate).into_iter().map(|i| &estimate.systems[i]);
     let systems = systems.map(|s| chart::SystemCost {
-        label: s.label.clone(),
+        label: s.name(),
         today: s.today,
         energy: s.cost_energy,
         standing: s.cost_standing,
@@ -39,14 +21,10 @@ pub(super) fn annual_cost(material: &Material<'_>) -> Result<Drawn, ChartError> 
         systems: systems.collect(),
     };
     let picture = chart::annual_cost(&data, &material.locale.marks)?;
-    let mut caption =
-        "What a year of heating and hot water costs to run. What the systems cost to put in is not in it.".to_owned();
-    if left_out > 0 {
-        caption += &format!(
-            " Today and the {} cheapest choices; the others stand under Money.",
-            shown.len() - 1
-        );
-    }
+    let caption = format!(
+        "What a year of heating and hot water costs to run. What the systems cost to put in is not in it.{}",
+        some_of_them(material)
+    );
     let mut drawn = drawn("annual-cost", caption, picture);
     drawn.narrow = cost_bars(material);
     Ok(drawn)
@@ -56,7 +34,8 @@ pub(super) fn annual_cost(material: &Material<'_>) -> Result<Drawn, ChartError> 
 fn cost_bars(material: &Material<'_>) -> Vec<Bar> {
     let estimate = material.estimate;
     let money = |amount: f64| material.locale.marks.money(&estimate.currency, amount);
-    let bars = estimate.systems.iter().map(|s| {
+    let bars = in_front(estimate).into_iter().map(|i| {
+        let s = &estimate.systems[i];
         let parts = [
             ("energy", Some(s.cost_energy)),
             ("standing", Some(s.cost_standing)),
@@ -64,7 +43,7 @@ fn cost_bars(material: &Material<'_>) -> Vec<Bar> {
         ];
         let today = if s.today { " (today)" } else { "" };
         Bar {
-            label: format!("{}{today}", chart::plain_line(&s.label)),
+            label: format!("{}{today}", chart::plain_line(&s.name())),
             parts: parts
                 .into_iter()
                 .filter_map(|(name, amount)| {
@@ -91,10 +70,10 @@ fn cost_bars(material: &Material<'_>) -> Vec<Bar> {
 }
 
 pub(super) fn monthly(material: &Material<'_>) -> Result<Drawn, ChartError> {
-    let systems = material
-        .estimate
-        .systems
-        .iter()
+    let estimate = material.estimate;
+    let systems = in_front(estimate)
+        .into_iter()
+        .map(|i| &estimate.systems[i])
         .map(|s| chart::MonthlySystem {
             label: s.label.clone(),
             today: s.today,
@@ -108,13 +87,30 @@ pub(super) fn monthly(material: &Material<'_>) -> Result<Drawn, ChartError> {
                 .collect(),
         });
     let data = chart::Monthly {
-        currency: material.estimate.currency.clone(),
+        currency: estimate.currency.clone(),
         months: MONTHS.iter().map(|month| month[..3].to_owned()).collect(),
         systems: systems.collect(),
     };
     let picture = chart::monthly(&data, &material.locale.marks)?;
-    let caption = "Cost and energy bought, month by month.";
+    let caption = format!(
+        "Cost and energy bought, month by month.{}",
+        some_of_them(material)
+    );
     Ok(drawn("monthly", caption, picture))
+}
+
+/// The years of the systems in front.
+pub(super) fn lifetime_in_front<'a>(
+    material: &Material<'a>,
+) -> impl Iterator<Item = &'a SystemLifetime> {
+    let estimate = material.estimate;
+    let shown = in_front(estimate);
+    let labels: Vec<&str> = shown
+        .iter()
+        .map(|&i| estimate.systems[i].label.as_str())
+        .collect();
+    let systems = estimate.lifetime.iter().flat_map(|all| &all.systems);
+    systems.filter(move |system| labels.contains(&system.label.as_str()))
 }
 
 /// What is spent over the years, where the choices' capital is known.
@@ -122,9 +118,22 @@ pub(super) fn spend(material: &Material<'_>) -> Result<Option<Drawn>, ChartError
     let Some(lifetime) = &material.estimate.lifetime else {
         return Ok(None);
     };
-    let marks = material.locale.marks;
-    let systems = lifetime.systems.iter().map(|system| chart::SystemSpend {
-        label: system.label.clone(),
+    let systems = lifetime_in_front(material);
+    let currency = &material.estimate.currency;
+    let mut drawn = spending(systems, lifetime, currency, &material.locale.marks)?;
+    drawn.caption += &some_of_them(material);
+    Ok(Some(drawn))
+}
+
+/// What `systems` of a comparison over the years spend.
+pub(super) fn spending<'a>(
+    systems: impl Iterator<Item = &'a SystemLifetime>,
+    lifetime: &LifetimeAnswer,
+    currency: &str,
+    marks: &Marks,
+) -> Result<Drawn, ChartError> {
+    let systems = systems.map(|system| chart::SystemSpend {
+        label: system.name(),
         today: system.today,
         spent: system
             .by_year
@@ -133,29 +142,18 @@ pub(super) fn spend(material: &Material<'_>) -> Result<Option<Drawn>, ChartError
             .collect(),
     });
     let data = chart::CumulativeSpend {
-        currency: material.estimate.currency.clone(),
+        currency: currency.to_owned(),
         terms: format!(
             "real, discounted at {} % a year",
             marks.number(lifetime.discount_rate * 100.0, 1)
         ),
         systems: systems.collect(),
     };
-    let picture = chart::cumulative_spend(&data, &marks)?;
-    let caption = "All that is spent so far, year after year: what is put in, energy, upkeep and what must be bought again. Where two lines \
-cross, one has caught up with the other.";
-    Ok(Some(drawn("spend", caption, picture)))
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn the_first_page_shows_today_and_the_cheapest() {
-        let three = [(false, 3.0), (true, 9.0), (false, 1.0)];
-        assert_eq!(shown_first(&three), [0, 1, 2]);
-        let mut many: Vec<_> = (0..9).map(|i| (false, f64::from(10 - i))).collect();
-        many[0].0 = true;
-        assert_eq!(shown_first(&many), [0, 4, 5, 6, 7, 8]);
-    }
+    let picture = chart::cumulative_spend(&data, marks)?;
+    let caption = format!(
+        "All that is spent so far, year after year: what is put in, energy, upkeep and what must be bought again. Where two lines \
+cross, one has caught up with the other. {}",
+        lifetime.todays_next
+    );
+    Ok(drawn("spend", caption, picture))
 }

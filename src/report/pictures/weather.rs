@@ -33,9 +33,10 @@ pub(super) fn weather_carpet(material: &Material<'_>) -> Result<Option<Drawn>, C
 /// The electricity of the cheapest choice as a carpet.
 pub(super) fn electricity_carpet(material: &Material<'_>) -> Result<Option<Drawn>, ChartError> {
     let systems = material.estimate.systems.iter().enumerate();
-    let cheapest = systems
-        .filter(|(_, system)| !system.today)
-        .min_by(|a, b| a.1.cost.total_cmp(&b.1.cost));
+    let cheapest = systems.filter(|(_, system)| !system.today).min_by(|a, b| {
+        let cold = a.1.leaves_cold.is_some().cmp(&b.1.leaves_cold.is_some());
+        cold.then(a.1.cost.total_cmp(&b.1.cost))
+    });
     let Some((system, answer)) = cheapest else {
         return Ok(None);
     };
@@ -55,7 +56,7 @@ pub(super) fn electricity_carpet(material: &Material<'_>) -> Result<Option<Drawn
     let picture = chart::carpet(&data, &material.locale.marks)?;
     let caption = format!(
         "{}, the cheapest choice: electricity of every hour{}.",
-        answer.label,
+        answer.name(),
         of_the_year(material)
     );
     Ok(Some(drawn("electricity-carpet", caption, picture)))

@@ -4,6 +4,7 @@
 //! runs every system, block by block, and [`shares()`] says which lever made the spread.
 
 mod hypercube;
+mod line;
 mod past;
 mod quantiles;
 mod range;

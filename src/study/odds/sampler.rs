@@ -1,5 +1,7 @@
 //! All uncertain levers moved together, every system run, block by block.
 
+use std::ops::Range;
+
 use rayon::prelude::*;
 
 use super::hypercube::Hypercube;
@@ -7,6 +9,7 @@ use super::past::Pasts;
 use super::range::correlated;
 use super::uncertain::{Doubts, Uncertain, possible};
 use crate::problem::{Place, Problem, Problems};
+use crate::study::ageing::Ageing;
 use crate::study::case::Case;
 use crate::study::lever::Lever;
 use crate::study::outcome::Outcome;
@@ -118,6 +121,11 @@ impl Sampler {
         self.cube.seed
     }
 
+    /// Samples of a block.
+    pub fn points(&self) -> usize {
+        self.cube.points
+    }
+
     /// The value a sample gave a lever for a choice; nothing where it was not moved.
     pub fn value(&self, sample: &Sample, place: usize, choice: usize) -> Option<f64> {
         let range = self.doubts.levers.get(place)?.of_choice(choice)?;
@@ -129,12 +137,24 @@ impl Sampler {
     /// # Errors
     /// When a bill cannot be made.
     pub fn block(&self, block: usize) -> Result<Vec<Sample>, Problems> {
-        let points = self.cube.block(block);
+        Ok(self.blocks(block..block + 1)?.concat())
+    }
+
+    /// The same of several blocks, all their samples side by side.
+    ///
+    /// # Errors
+    /// When a bill cannot be made.
+    pub fn blocks(&self, blocks: Range<usize>) -> Result<Vec<Vec<Sample>>, Problems> {
+        let points: Vec<Vec<f64>> = blocks.flat_map(|block| self.cube.block(block)).collect();
         let drawn: Vec<Result<Sample, Problems>> = points
             .into_par_iter()
             .map(|shares| self.sample(shares))
             .collect();
-        drawn.into_iter().collect()
+        let drawn = drawn.into_iter().collect::<Result<Vec<_>, _>>()?;
+        Ok(drawn
+            .chunks(self.cube.points)
+            .map(<[Sample]>::to_vec)
+            .collect())
     }
 
     fn sample(&self, mut shares: Vec<f64>) -> Result<Sample, Problems> {
@@ -147,18 +167,14 @@ impl Sampler {
             shares[fuel] = correlated(shares[fuel], shares[electricity], correlation);
         }
         let mut case = self.case.clone();
-        for contender in 0..case.contenders.len() {
-            let moves: Vec<(Lever, f64)> = levers
-                .iter()
-                .zip(&shares)
-                .filter_map(|(one, &share)| {
-                    Some((one.lever, one.ranges.get(contender)?.as_ref()?.at(share)?))
-                })
-                .collect();
-            if !moves.is_empty() {
-                case.apply(contender, &moves)?;
-            }
+        let mut moves: Vec<(Lever, usize, f64)> = Vec::new();
+        for (one, &share) in levers.iter().zip(&shares) {
+            let ranges = one.ranges.iter().enumerate();
+            moves.extend(ranges.filter_map(|(contender, range)| {
+                Some((one.lever, contender, range.as_ref()?.at(share)?))
+            }));
         }
+        case.apply_each(&moves, Ageing::Settled)?;
         // Every system meets the same year of the weather.
         let years = case.site.years.len();
         let mut year = 0;

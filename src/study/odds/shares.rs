@@ -2,6 +2,8 @@
 
 use nalgebra::{DMatrix, DVector};
 
+use super::line::{Line, score};
+
 /// The share of the spread that knowing one quantity would take away.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct SpreadShare {
@@ -17,118 +19,144 @@ pub struct SpreadShare {
 const LEAST_IN_CLASS: usize = 12;
 /// Most classes.
 const MOST_CLASSES: usize = 24;
+/// Numbers that are fitted to a class: its mean and its slope.
+const FITTED: usize = 2;
 /// Parts of the sample that the limits are made from.
 const PARTS: usize = 8;
 
-/// First-order shares Var(E[y|x])/Var(y) of each quantity: x is sorted into classes of equal number, and the variance of the class
-/// means, less what chance alone gives them, is set against the whole (Plischke, Borgonovo and Smith 2013, from memory; the
-/// correction is that of the analysis of variance). `x` holds one row a sample. Limits follow from leaving out parts of the sample
-/// in turn (jackknife). Nothing when there is no spread or too small a sample.
+/// First-order shares Var(E[y|x])/Var(y) of each quantity. `x` holds one row of shares of one a sample, as they were drawn.
+///
+/// The sample is sorted by the quantity into classes of equal number, and a straight line in the quantity's normal score stands for the
+/// mean in each of them; the variance of these lines, less what chance alone gives them, is set against the whole (class means: Plischke,
+/// Borgonovo and Smith 2013, from memory; the correction is that of the analysis of variance). A mean alone would lose what the quantity
+/// still does within its class, 1.3 % of the variance of a normal score in 24 classes and more in fewer. Limits follow from leaving out
+/// parts of the sample in turn (jackknife). Nothing when there is no spread or too small a sample.
 pub fn shares(x: &[Vec<f64>], y: &[f64]) -> Option<Vec<SpreadShare>> {
     let quantities = x.first()?.len();
     if y.len() < 2 * LEAST_IN_CLASS * PARTS / (PARTS - 1) || x.len() != y.len() {
         return None;
     }
-    let all: Vec<usize> = (0..y.len()).collect();
-    (0..quantities)
-        .map(|quantity| {
-            let column = |rows: &[usize]| share(rows, x, y, quantity);
-            let share = column(&all)?;
-            let without: Vec<f64> = (0..PARTS)
-                .map(|part| {
-                    let kept: Vec<usize> = all
-                        .iter()
-                        .copied()
-                        .filter(|row| row % PARTS != part)
-                        .collect();
-                    column(&kept)
-                })
-                .collect::<Option<_>>()?;
-            let mean = without.iter().sum::<f64>() / PARTS as f64;
-            let scatter: f64 = without.iter().map(|one| (one - mean).powi(2)).sum();
-            let error = (scatter * (PARTS as f64 - 1.0) / PARTS as f64).sqrt();
-            Some(SpreadShare {
-                share: share.clamp(0.0, 1.0),
-                low: (share - 2.0 * error).clamp(0.0, 1.0),
-                high: (share + 2.0 * error).clamp(0.0, 1.0),
-            })
-        })
-        .collect()
-}
-
-fn share(rows: &[usize], x: &[Vec<f64>], y: &[f64], quantity: usize) -> Option<f64> {
-    let count = rows.len() as f64;
-    let mean = rows.iter().map(|&row| y[row]).sum::<f64>() / count;
-    let whole: f64 = rows.iter().map(|&row| (y[row] - mean).powi(2)).sum();
-    if whole.is_nan() || whole <= 0.0 {
-        return None;
-    }
-    let calmed = without_the_others(rows, x, y, quantity);
-    let mut order: Vec<(f64, f64)> = rows
-        .iter()
-        .map(|&row| x[row][quantity])
-        .zip(calmed)
-        .collect();
-    order.sort_by(|a, b| a.0.total_cmp(&b.0));
-    let classes = (order.len() / LEAST_IN_CLASS).clamp(2, MOST_CLASSES);
-    let (mut between, mut within) = (0.0, 0.0);
-    for class in 0..classes {
-        let (first, end) = (
-            class * order.len() / classes,
-            (class + 1) * order.len() / classes,
-        );
-        let members = &order[first..end];
-        let own = members.iter().map(|(_, y)| y).sum::<f64>() / members.len() as f64;
-        between += members.len() as f64 * (own - mean).powi(2);
-        within += members.iter().map(|(_, y)| (y - own).powi(2)).sum::<f64>();
-    }
-    // Class means scatter by chance: (classes − 1) times the variance within is taken off (epsilon squared). What was fitted to the
-    // others is no longer free.
-    let others = x.first().map_or(0, Vec::len) - 1;
-    let free = (count - classes as f64 - others as f64).max(1.0);
-    Some((between - (classes as f64 - 1.0) * within / free) / whole)
-}
-
-/// The values less what the other quantities do to them in a straight line. It calms the class means and does not move them: the part
-/// that is taken off has no mean left at any value of the quantity itself (control variates). Where another quantity goes with it,
-/// only what that one does beyond is taken off, since knowing the one tells the other.
-fn without_the_others(rows: &[usize], x: &[Vec<f64>], y: &[f64], quantity: usize) -> Vec<f64> {
-    /// Correlations above this many standard errors are no chance.
-    const CORRELATED: f64 = 4.0;
-    let quantities = x.first().map_or(0, Vec::len);
-    let count = rows.len() as f64;
-    let centre = |of: &dyn Fn(usize) -> f64| -> Vec<f64> {
-        let mean = rows.iter().map(|&row| of(row)).sum::<f64>() / count;
-        rows.iter().map(|&row| of(row) - mean).collect()
-    };
     let columns: Vec<Vec<f64>> = (0..quantities)
-        .map(|column| centre(&|row| x[row][column]))
+        .map(|quantity| x.iter().map(|row| score(row[quantity])).collect())
         .collect();
-    let values = centre(&|row| y[row]);
-    let product = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(a, b)| a * b).sum::<f64>();
-    let mut calmed: Vec<f64> = rows.iter().map(|&row| y[row]).collect();
-    let Some(slopes) = least_squares(&columns, &values) else {
-        return calmed;
+    let of = |rows: &[usize]| -> Option<Vec<f64>> {
+        let part = Part::of(rows, &columns, y)?;
+        Some(
+            (0..quantities)
+                .map(|quantity| part.share(quantity))
+                .collect(),
+        )
     };
-    let own = product(&columns[quantity], &columns[quantity]);
-    for (other, slope) in slopes
-        .iter()
-        .enumerate()
-        .filter(|(other, _)| *other != quantity)
-    {
-        let joint = product(&columns[quantity], &columns[other]);
-        let spread = (own * product(&columns[other], &columns[other])).sqrt();
-        let goes_with = (joint / spread).abs() * count.sqrt() > CORRELATED;
-        let told = if goes_with { joint / own } else { 0.0 };
-        for (i, value) in calmed.iter_mut().enumerate() {
-            *value -= slope * (columns[other][i] - told * columns[quantity][i]);
+    let all: Vec<usize> = (0..y.len()).collect();
+    let found = of(&all)?;
+    let without = (0..PARTS)
+        .map(|part| {
+            let kept = all.iter().copied().filter(|row| row % PARTS != part);
+            of(&kept.collect::<Vec<_>>())
+        })
+        .collect::<Option<Vec<_>>>()?;
+    let limits = found.into_iter().enumerate().map(|(quantity, share)| {
+        let each = || without.iter().map(|shares| shares[quantity]);
+        let mean = each().sum::<f64>() / PARTS as f64;
+        let scatter: f64 = each().map(|one| (one - mean).powi(2)).sum();
+        let error = (scatter * (PARTS as f64 - 1.0) / PARTS as f64).sqrt();
+        SpreadShare {
+            share: share.clamp(0.0, 1.0),
+            low: (share - 2.0 * error).clamp(0.0, 1.0),
+            high: (share + 2.0 * error).clamp(0.0, 1.0),
         }
+    });
+    Some(limits.collect())
+}
+
+/// Some rows of a sample, everything centred.
+struct Part {
+    /// Normal scores of each quantity.
+    scores: Vec<Vec<f64>>,
+    values: Vec<f64>,
+    /// Sum of the squared values.
+    whole: f64,
+    /// Slopes of the values on all scores together; nothing where these depend on one another.
+    slopes: Option<Vec<f64>>,
+}
+
+impl Part {
+    /// Nothing without spread.
+    fn of(rows: &[usize], columns: &[Vec<f64>], y: &[f64]) -> Option<Self> {
+        let centred = |column: &[f64]| -> Vec<f64> {
+            let mean = rows.iter().map(|&row| column[row]).sum::<f64>() / rows.len() as f64;
+            rows.iter().map(|&row| column[row] - mean).collect()
+        };
+        let values = centred(y);
+        let whole = product(&values, &values);
+        if whole.is_nan() || whole <= 0.0 {
+            return None;
+        }
+        let scores: Vec<Vec<f64>> = columns.iter().map(|column| centred(column)).collect();
+        Some(Self {
+            slopes: least_squares(&scores, &values),
+            scores,
+            values,
+            whole,
+        })
     }
-    calmed
+
+    fn share(&self, quantity: usize) -> f64 {
+        let calmed = self.without_the_others(quantity);
+        let own = &self.scores[quantity];
+        let mut order: Vec<(f64, f64)> = own.iter().copied().zip(calmed).collect();
+        order.sort_by(|a, b| a.0.total_cmp(&b.0));
+        let count = order.len();
+        let classes = (count / LEAST_IN_CLASS).clamp(2, MOST_CLASSES);
+        let (mut between, mut within) = (0.0, 0.0);
+        for class in 0..classes {
+            let members = &order[class * count / classes..(class + 1) * count / classes];
+            let line = Line::through(members);
+            for &(x, y) in members {
+                between += line.at(x).powi(2);
+                within += (y - line.at(x)).powi(2);
+            }
+        }
+        // Lines scatter by chance: their free numbers times the variance within are taken off (epsilon squared). What was fitted to the
+        // others is no longer free.
+        let fitted = (FITTED * classes) as f64;
+        let free = (count as f64 - fitted - (self.scores.len() - 1) as f64).max(1.0);
+        (between - (fitted - 1.0) * within / free) / self.whole
+    }
+
+    /// The values less what the other quantities do to them in a straight line of their scores. It calms the lines and does not move
+    /// them: the part that is taken off has no mean left at any value of the quantity itself (control variates). Where another quantity
+    /// goes with it, only what that one does beyond is taken off, since knowing the one tells the other: the mean of a normal score at
+    /// another is their correlation times that one, which holds exactly in scores and only nearly in shares.
+    fn without_the_others(&self, quantity: usize) -> Vec<f64> {
+        /// Correlations above this many standard errors are no chance.
+        const CORRELATED: f64 = 4.0;
+        let mut calmed = self.values.clone();
+        let Some(slopes) = &self.slopes else {
+            return calmed;
+        };
+        let own = &self.scores[quantity];
+        let squares = product(own, own);
+        let others = self.scores.iter().zip(slopes).enumerate();
+        for (_, (other, slope)) in others.filter(|(place, _)| *place != quantity) {
+            let joint = product(own, other);
+            let spread = (squares * product(other, other)).sqrt();
+            let goes_with = (joint / spread).abs() * (own.len() as f64).sqrt() > CORRELATED;
+            let told = if goes_with { joint / squares } else { 0.0 };
+            for ((value, other), own) in calmed.iter_mut().zip(other).zip(own) {
+                *value -= slope * (other - told * own);
+            }
+        }
+        calmed
+    }
+}
+
+fn product(a: &[f64], b: &[f64]) -> f64 {
+    a.iter().zip(b).map(|(a, b)| a * b).sum()
 }
 
 /// Slopes of values on columns, all centred, by the normal equations; nothing where columns depend on one another. The columns are
-/// shares of one, so that the equations are well scaled.
+/// normal scores, so that the equations are well scaled.
 fn least_squares(columns: &[Vec<f64>], values: &[f64]) -> Option<Vec<f64>> {
     /// A singular value below this part of the greatest is none.
     const LEAST: f64 = 1e-9;
@@ -182,8 +210,8 @@ mod tests {
             z[0].sin() + 7.0 * z[1].sin().powi(2) + 0.1 * z[2].powi(4) * z[0].sin()
         };
         let y: Vec<f64> = x.iter().map(of).collect();
-        // 24 classes smooth the steep sides a little; the sampling error at 8000 points is about 0.01.
-        check(&x, &y, &[0.3139, 0.4424, 0.0], 0.025);
+        // The sampling error at 8000 points is about 0.007: three of those.
+        check(&x, &y, &[0.3139, 0.4424, 0.0], 0.02);
     }
 
     /// Sobol' g with a = 0, 1, 4.5, 9: V_i = 1/(3 (1 + a_i)²), V = Π(1 + V_i) − 1, shares V_i/V.
@@ -220,9 +248,9 @@ mod tests {
             .iter()
             .map(|p| normal.at(p[0]).unwrap() + normal.at(p[1]).unwrap())
             .collect();
-        // 24 classes of equal number cut the tails of a normal score short: 0.987 of its variance lies between them, which makes 0.789.
-        // What goes straight with the other is taken off by its share of one, where the truth is straight in the score: as much again.
-        check(&x, &y, &[0.8, 0.8], 0.03);
+        // Class means alone gave 0.776. Over 15 seeds of 4000 a line in each class was off by 0.003 at most in the mean, a single seed
+        // by 0.006: three of those.
+        check(&x, &y, &[0.8, 0.8], 0.02);
     }
 
     #[test]
@@ -232,29 +260,68 @@ mod tests {
         assert_eq!(shares(&[], &[]), None);
     }
 
-    /// The limits of a share over repeated seeds: y = 4 a + 2 b + c of even quantities, shares 16/21, 4/21, 1/21 in closed form. Limits of
-    /// two errors from eight parts hold 0.914 of the time by Student's t with 7 degrees of freedom, in 100 seeds within 0.085 of it
-    /// (three standard errors).
+    /// The limits of a share over repeated seeds, for three models with a closed answer and as many samples as `estimate` and `odds` draw:
+    /// 4 a + 2 b + c of even quantities (shares 16/21, 4/21, 1/21); the two that go together by 0.6 (0.8 each); the Sobol' g function of
+    /// above. Limits of two errors from eight parts hold 0.914 of the time by Student's t with 7 degrees of freedom.
+    ///
+    /// Held of 100 seeds, with 400 samples and with 80: 4 a + 2 b + c: 88, 99, 98 and 94, 98, 94; together:
+    /// 99, 90 and 99, 93; g: 99, 95, 98, 100 and 98, 97, 99, 98. The g function with 80 samples is the hard one: six lines do not follow its
+    /// kink, and its greatest share comes out 0.07 too small, within its wide limits.
     #[test]
     fn limits_hold_over_repeated_seeds() {
-        let seeds = 100;
-        let exact = [16.0 / 21.0, 4.0 / 21.0, 1.0 / 21.0];
-        let mut held = [0_u32; 3];
-        for seed in 0..seeds {
-            let cube = Hypercube {
-                seed,
-                points: 50,
-                quantities: 3,
-            };
-            let x: Vec<Vec<f64>> = (0..8).flat_map(|block| cube.block(block)).collect();
-            let y: Vec<f64> = x.iter().map(|p| 4.0 * p[0] + 2.0 * p[1] + p[2]).collect();
-            for ((held, found), exact) in held.iter_mut().zip(shares(&x, &y).unwrap()).zip(exact) {
-                *held += u32::from((found.low..=found.high).contains(&exact));
+        let held = |blocks: usize, points: usize, model: &Model, exact: &[f64]| -> Vec<u32> {
+            let mut held = vec![0_u32; exact.len()];
+            for seed in 0..100 {
+                let cube = Hypercube {
+                    seed,
+                    points,
+                    quantities: exact.len(),
+                };
+                let mut x: Vec<Vec<f64>> =
+                    (0..blocks).flat_map(|block| cube.block(block)).collect();
+                let y: Vec<f64> = x.iter_mut().map(model).collect();
+                let found = shares(&x, &y).unwrap();
+                for ((held, found), exact) in held.iter_mut().zip(found).zip(exact) {
+                    *held += u32::from((found.low..=found.high).contains(exact));
+                }
             }
-        }
-        println!("held of {seeds}: {held:?}");
-        for held in held {
-            assert!((0.83..=1.0).contains(&(f64::from(held) / 100.0)), "{held}");
+            held
+        };
+        let straight = |p: &mut Vec<f64>| 4.0 * p[0] + 2.0 * p[1] + p[2];
+        let together = |p: &mut Vec<f64>| {
+            use super::super::range::correlated;
+            p[1] = correlated(p[1], p[0], 0.6);
+            score(p[0]) + score(p[1])
+        };
+        let a = [0.0, 1.0, 4.5, 9.0];
+        let g = move |p: &mut Vec<f64>| {
+            let parts = p.iter().zip(a);
+            parts
+                .map(|(u, a)| ((4.0 * u - 2.0).abs() + a) / (1.0 + a))
+                .product()
+        };
+        let parts = a.map(|a| 1.0 / (3.0 * (1.0 + a) * (1.0 + a)));
+        let whole: f64 = parts.iter().map(|part| 1.0 + part).product::<f64>() - 1.0;
+        let of_g = parts.map(|part| part / whole);
+        let models: [(&str, &Model, &[f64]); 3] = [
+            (
+                "straight",
+                &straight,
+                &[16.0 / 21.0, 4.0 / 21.0, 1.0 / 21.0],
+            ),
+            ("together", &together, &[0.8, 0.8]),
+            ("g", &g, &of_g),
+        ];
+        for (name, model, exact) in models {
+            let (many, few) = (held(8, 50, model, exact), held(4, 20, model, exact));
+            println!("{name}: {many:?} {few:?}");
+            // 0.914 of 100 less three standard errors of 0.028.
+            assert!(
+                many.iter().chain(&few).all(|held| *held >= 83),
+                "{name} {many:?} {few:?}"
+            );
         }
     }
+
+    type Model = dyn Fn(&mut Vec<f64>) -> f64;
 }

@@ -1,9 +1,10 @@
 //! What is asked of the machine, and how long and at which water temperatures it runs for it.
 
 use crate::answer::explain::{Lines, n};
+use crate::heatpump::Duty;
 use crate::home::Home;
 use crate::study::{Traced, TracedDuty};
-use crate::year::DutyKind;
+use crate::year::{DutyKind, Flags};
 
 /// Figures agree to this where a line says how one follows from others, relative.
 const AGREES: f64 = 1e-4;
@@ -17,28 +18,108 @@ pub(super) fn asked(part: &mut Lines, home: &Home, traced: &Traced, duty: &Trace
         "h",
         "the hour less what hot water took",
     );
-    let wanted_kw = traced.row.space_wanted_kwh / asked.hours;
-    let how = match duty.kind {
-        DutyKind::HotWater => "what the store takes up to its set point, at full output".to_owned(),
-        DutyKind::SpaceHeat if (wanted_kw / asked.heat_kw - 1.0).abs() < AGREES => format!(
-            "heat wanted over the time it has = {} / {}",
-            n(traced.row.space_wanted_kwh),
-            n(asked.hours)
-        ),
-        DutyKind::SpaceHeat => {
-            "of the heat wanted, what machine and emitters carry in that time".to_owned()
-        }
-    };
-    part.add("heat asked", asked.heat_kw, "kW", how);
     if duty.kind == DutyKind::HotWater {
+        let how = "what the store takes up to its set point, at full output";
+        part.add("heat asked", asked.heat_kw, "kW", how);
         let how = "mean store temperature of the block + coil difference";
         part.add("flow to the coil", asked.flow_c, "°C", how);
         return;
     }
+    let row = &traced.row;
+    let behind_kwh = row.backup_kwh + row.heater_space_kwh;
+    if behind_kwh > 0.0 {
+        lifted(part, home, traced, asked, behind_kwh);
+        return;
+    }
+    let wanted_kw = row.space_wanted_kwh / asked.hours;
+    let how = if (wanted_kw / asked.heat_kw - 1.0).abs() < AGREES {
+        format!(
+            "heat wanted over the time it has = {} / {}",
+            n(row.space_wanted_kwh),
+            n(asked.hours)
+        )
+    } else if row.flags.has(Flags::FLOW_CAPPED) {
+        "of the heat wanted, what the emitters take at the machine's highest flow and it can give"
+            .to_owned()
+    } else {
+        "of the heat wanted, what machine and emitters carry in that time".to_owned()
+    };
+    part.add("heat asked", asked.heat_kw, "kW", how);
+    water(
+        part,
+        home,
+        traced,
+        asked.heat_kw,
+        asked.spread_k,
+        asked.flow_c,
+    );
+}
+
+/// Where a heater lifts the flow behind the machine: first the water of the whole, then the machine's part of it.
+fn lifted(part: &mut Lines, home: &Home, traced: &Traced, asked: &Duty, behind_kwh: f64) {
+    let row = &traced.row;
+    let carried_kw = row.machine_space_kwh + behind_kwh;
+    part.add(
+        "heat the emitters carry",
+        carried_kw,
+        "kW",
+        format!(
+            "machine + heater behind it, in the hour = {} + {}",
+            n(row.machine_space_kwh),
+            n(behind_kwh)
+        ),
+    );
     let emitters = &home.emitters;
-    let share = asked.heat_kw / emitters.design_load_kw();
+    let warm = emitters.supply(carried_kw, traced.before.room_c, row.outdoor_c);
+    let flow_c = warm.water.flow_c + emitters.header_k();
+    water(part, home, traced, carried_kw, warm.spread_k, flow_c);
+    part.add(
+        "heat asked",
+        asked.heat_kw,
+        "kW",
+        if row.flags.has(Flags::FLOW_CAPPED) {
+            "what warms the return of the whole to the machine's highest flow, or its greatest output there; a heater lifts the rest"
+        } else {
+            "its greatest output at the flow below; a heater lifts the rest"
+        },
+    );
+    part.add(
+        "spread over the machine",
+        asked.spread_k,
+        "K",
+        format!(
+            "spread at that load × heat asked / heat the emitters carry = {} × {} / {}",
+            n(warm.spread_k),
+            n(asked.heat_kw),
+            n(carried_kw)
+        ),
+    );
+    part.add(
+        "flow asked of the machine",
+        asked.flow_c,
+        "°C",
+        format!(
+            "flow needed − spread at that load + spread over the machine = {} − {} + {}",
+            n(flow_c),
+            n(warm.spread_k),
+            n(asked.spread_k)
+        ),
+    );
+}
+
+/// The water that carries a heat into the rooms.
+fn water(
+    part: &mut Lines,
+    home: &Home,
+    traced: &Traced,
+    heat_kw: f64,
+    spread_k: f64,
+    needed_c: f64,
+) {
+    let emitters = &home.emitters;
+    let share = heat_kw / emitters.design_load_kw();
     let room = traced.before.room_c;
-    let mean = emitters.at_load(asked.heat_kw, room).mean_c();
+    let mean = emitters.at_load(heat_kw, room).mean_c();
     let exponent = emitters.kind().exponent();
     let one_kind = room + emitters.design_excess_k() * share.powf(1.0 / exponent);
     part.add(
@@ -46,8 +127,8 @@ pub(super) fn asked(part: &mut Lines, home: &Home, traced: &Traced, duty: &Trace
         share,
         "",
         format!(
-            "heat asked over design heat load of the emitters = {} / {}",
-            n(asked.heat_kw),
+            "heat over design heat load of the emitters = {} / {}",
+            n(heat_kw),
             n(emitters.design_load_kw())
         ),
     );
@@ -66,12 +147,12 @@ pub(super) fn asked(part: &mut Lines, home: &Home, traced: &Traced, duty: &Trace
             "that of the group of emitters that needs the hottest".to_owned()
         },
     );
-    let spread = emitters.design_spread_k() * share;
+    let designed_k = emitters.design_spread_k() * share;
     part.add(
         "spread at that load",
-        asked.spread_k,
+        spread_k,
         "K",
-        if (spread - asked.spread_k).abs() < 0.01 {
+        if (designed_k - spread_k).abs() < 0.01 {
             format!(
                 "design spread × share = {} × {}",
                 n(emitters.design_spread_k()),
@@ -81,17 +162,17 @@ pub(super) fn asked(part: &mut Lines, home: &Home, traced: &Traced, duty: &Trace
             "at the water flow of the emitters".to_owned()
         },
     );
-    let follows = mean + asked.spread_k / 2.0;
+    let follows = mean + spread_k / 2.0;
     let header = emitters.header_k();
     part.add(
         "flow needed",
-        asked.flow_c,
+        needed_c,
         "°C",
-        if (asked.flow_c - header - follows).abs() < 1e-6 {
+        if (needed_c - header - follows).abs() < 1e-6 {
             format!(
                 "mean water + half the spread + header = {} + {} / 2 + {}",
                 n(mean),
-                n(asked.spread_k),
+                n(spread_k),
                 n(header)
             )
         } else {
@@ -127,9 +208,7 @@ pub(super) fn running(part: &mut Lines, duty: &TracedDuty) {
         "flow while running",
         got.flow_c,
         "°C",
-        if got.flags.capped_flow {
-            "the highest of the machine at this source".to_owned()
-        } else if asked.at_full_output {
+        if asked.at_full_output {
             format!("flow to the coil = {}", n(asked.flow_c))
         } else if (flow_c - got.flow_c).abs() < 0.01 {
             format!(
