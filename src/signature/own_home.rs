@@ -134,7 +134,8 @@ pub fn fit_own_home(
             0.0
         }
     });
-    let is_free = |k: usize| k <= LOSS || within[k] > 0.0;
+    // The readings do not tell an efficiency from a loss: it is not fitted, only carried into the limits.
+    let is_free = |k: usize| k <= LOSS || (k != EFFICIENCY && within[k] > 0.0);
 
     let mut at = prior;
     at[LOSS] = start_w_per_k;
@@ -154,7 +155,11 @@ pub fn fit_own_home(
         let mut normal = data;
         for k in 0..PARAMETERS {
             normal[(k, k)] += if is_free(k) { precision[k] } else { 1.0 };
-            pull[k] += precision[k] * (prior[k] - at[k]);
+            pull[k] += if is_free(k) {
+                precision[k] * (prior[k] - at[k])
+            } else {
+                0.0
+            };
         }
         // Scaled to ones on its diagonal, so that watts and shares do not meet.
         let scale = normal
@@ -180,6 +185,12 @@ pub fn fit_own_home(
             let limits = |k: usize| {
                 let known = (covariance[(k, k)] - scatter[(k, k)]).max(0.0);
                 let left = NORMAL_95 * step[k];
+                let by_efficiency = if k == LOSS {
+                    at[LOSS] * within[EFFICIENCY]
+                } else {
+                    0.0
+                };
+                let known = known + (by_efficiency / NORMAL_95).powi(2);
                 let half =
                     (t * t * scatter[(k, k)] + NORMAL_95 * NORMAL_95 * known + left * left).sqrt();
                 Limits::around(at[k], if is_free(k) { half } else { 0.0 })
