@@ -128,6 +128,9 @@ fn bills(readings: &Path, brief: &Path) -> Result<serde_json::Value, String> {
     }
 }
 
+/// Which interval of the year a day belongs to.
+type Interval = fn(NaiveDate) -> u32;
+
 /// The truth within 2 % and inside the limits, and the home otherwise as the brief says.
 ///
 /// 2 %: the fit stops within 3 % of a standard error, and takes the hot water as an even load with the season of the ground's
@@ -142,7 +145,7 @@ fn own_meter_in_own_heat_loss_out() {
     for home in homes() {
         fs::write(&brief, home.brief()).unwrap();
         let days = home.days(&brief);
-        let by: [(&str, fn(NaiveDate) -> u32); 3] = [
+        let by: [(&str, Interval); 3] = [
             ("weekly", |date| date.ordinal0() / 7),
             ("monthly", |date| date.month0()),
             ("quarterly", |date| date.month0() / 3),

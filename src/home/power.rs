@@ -2,7 +2,8 @@
 //!
 //! The cells are those of the floating-point number itself: every octave is cut into 32, so that the leading bits of a number are its place
 //! in the table. A cubic (Hermite, through values and slopes) over a cell `[a, a + h]` with `h ≤ a/32` is off by at most `h⁴/384 · max|f⁗|`
-//! (textbook): with an exponent p from 0 to 1 that is `32⁻⁴/384 · p(1−p)(2−p)(3−p) xᵖ`, less than 2e-9 of the value.
+//! (textbook): with an exponent p from 0 to 1 that is `32⁻⁴/384 · p(1−p)(2−p)(3−p) xᵖ`, at most 2.5e-9 of the value (the
+//! product is 1 at p = 0.38).
 
 /// The table holds numbers from 2⁻²⁰ to 2⁴; what is asked beyond is computed.
 const LOW_OCTAVE: i32 = -20;
@@ -77,7 +78,7 @@ mod tests {
             let x = octave.exp2();
             let expected = x.powf(p);
             let found = FixedPower::new(p).of(x);
-            prop_assert!((found - expected).abs() <= 2e-9 * expected, "{x} {found} {expected}");
+            prop_assert!((found - expected).abs() <= 2.5e-9 * expected, "{x} {found} {expected}");
         }
     }
 
