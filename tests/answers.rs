@@ -208,7 +208,15 @@ fn half_a_degree_is_not_rounded_away() {
     let at = folder.path();
     let (text, _) = run(
         at,
-        &["estimate", "brief.toml", "--samples", "0", "--out", "out"],
+        &[
+            "estimate",
+            "brief.toml",
+            "--samples",
+            "0",
+            "--assumptions",
+            "--out",
+            "out",
+        ],
     );
     assert!(text.contains("20.5 °C all day"), "{text}");
     let page = report(at);

@@ -67,7 +67,7 @@ fn odds(material: &Material<'_>) -> Option<Glance> {
             Some(row(
                 s,
                 GlanceShape::Span([spread.p10, spread.p50, spread.p90]),
-                in_a_hundred(of_it.chance_cheaper),
+                format!("{} in 100", of_it.chance_said),
             ))
         })
         .collect();
@@ -78,15 +78,6 @@ fn odds(material: &Material<'_>) -> Option<Glance> {
         rows,
         against: Some((0.0, "dashed: as today; right of it cheaper".to_owned())),
     })
-}
-
-/// A chance as a family says it; a sample is never sure of all or none.
-fn in_a_hundred(chance: f64) -> String {
-    match chance * 100.0 {
-        more if more > 99.0 => "over 99 in 100".to_owned(),
-        less if less < 1.0 => "under 1 in 100".to_owned(),
-        percent => format!("{percent:.0} in 100"),
-    }
 }
 
 /// What the machines can give at the design temperature, against what the home loses. A boiler gives many times that and would make
