@@ -1,7 +1,7 @@
 //! Seeded faults: the traps that give plausible wrong numbers, each to be switched on at will in a test build.
 //!
 //! A check that never fails proves nothing. With the feature `seeded-faults` one trap at a time is put into the program, in the one
-//! line where it would be made by mistake, and `tests/seeded_faults.rs` asks that a row of the validation table goes red. Without
+//! line where it would be made by mistake, and `tests/validation/seeded.rs` asks that a row of the validation table goes red. Without
 //! the feature [`on`] is a constant `false`, and the lines vanish.
 
 /// A mistake that gives plausible wrong numbers.

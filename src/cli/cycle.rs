@@ -105,8 +105,8 @@ pub fn run(args: &Args) -> Result<(), Failure> {
 
 fn unknown(refused: &UnknownRefrigerant) -> Failure {
     let remedy = match refused.nearest {
-        Some(nearest) => format!("the nearest is {nearest}"),
-        None => String::new(),
+        Some(nearest) => format!("did you mean {nearest}?"),
+        None => "another refrigerant cannot be reckoned".to_owned(),
     };
     Problems::from(Problem::new(
         Place::field("--refrigerant"),

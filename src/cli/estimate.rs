@@ -17,8 +17,8 @@ use crate::problem::Problems;
 #[cfg(feature = "pdf")]
 use crate::report::report_pdf;
 use crate::report::{
-    Material, accounts_text, estimate_text, home_text, in_front, ledger_csv, odds_pictures,
-    patterns_text, pictures, report_html,
+    Material, accounts_text, estimate_text, home_text, in_front, ledger_csv, ledger_legend,
+    odds_pictures, patterns_text, pictures, report_html,
 };
 use crate::study::odds::{Sample, Sampler};
 use crate::study::{Outcome, bills};
@@ -209,6 +209,8 @@ fn files(
         let name = format!("ledger-{}-{label}.csv", i + 1);
         files.push(NewFile::new(folder.join(name), content));
     }
+    let legend = folder.join("ledger-columns.txt");
+    files.push(NewFile::new(legend, ledger_legend().into_bytes()));
     if material.estimate.weather.part_year_days.is_some() {
         return Ok(files);
     }

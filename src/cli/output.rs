@@ -15,7 +15,7 @@ pub enum Format {
     /// Tables and sentences.
     #[default]
     Text,
-    /// The JSON that DEVELOPERS.md describes.
+    /// The same as JSON.
     Json,
 }
 

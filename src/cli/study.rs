@@ -2,7 +2,9 @@
 
 use std::path::{Path, PathBuf};
 
-use super::{Failure, Format, NewFile, picture_files, print, print_json, warn_in, write_files};
+use super::{
+    Failure, Format, NewFile, check_folder, picture_files, print, print_json, warn_in, write_files,
+};
 use crate::answer::study::{StudyAnswer, Wish, studies};
 use crate::brief::Brief;
 use crate::locale::Marks;
@@ -14,21 +16,16 @@ use crate::study::{Case, Lever};
 const PRICE_STEPS: usize = 40;
 /// Values of each of two other levers: every pair of values is a year that is run.
 const OTHER_STEPS: usize = 12;
+/// What the folder holds in any case.
+const RESULT: &str = "study.json";
+/// Columns of a help text.
+const HELP_WIDTH: usize = 90;
 
 /// What would change the answer: break-even, emitters, size, prices, swings and the years of each system's life.
 ///
 /// Without a brief it runs the demonstration home that is built in.
 #[derive(Debug, clap::Args)]
-#[command(after_help = "\
-Examples:
-  winterledger study                                     the built-in demonstration home
-  winterledger study briefs/terrace.toml --out study     study.json and pictures
-  winterledger study --choice \"Air source, larger radiators\"
-  winterledger study --over \"heat loss\" --against \"design flow temperature\" --out out --force
-
-Levers: electricity rate, gas rate, heat loss, design flow temperature, indoor temperature,
-hot water, rated output, share of laboratory performance kept, loop resistance, loop length,
-capital, grant, carbon of electricity.")]
+#[command(after_help = after_help())]
 pub struct Args {
     /// Brief (TOML); without one, the built-in demonstration home.
     brief: Option<PathBuf>,
@@ -50,6 +47,22 @@ pub struct Args {
     /// How to print the result.
     #[arg(long, value_enum, default_value_t)]
     format: Format,
+}
+
+fn after_help() -> String {
+    let names: Vec<_> = Lever::ALL.iter().map(|lever| lever.name()).collect();
+    let levers = format!("Levers: {}.", names.join(", "));
+    format!(
+        "\
+Examples:
+  winterledger study                                     the built-in demonstration home
+  winterledger study briefs/terrace.toml --out study     study.json and pictures
+  winterledger study --choice \"Air source, larger radiators\"
+  winterledger study --over \"heat loss\" --against \"design flow temperature\" --out out --force
+
+{}",
+        textwrap::fill(&levers, HELP_WIDTH)
+    )
 }
 
 /// Runs the command.
@@ -83,6 +96,9 @@ pub fn run(args: &Args) -> Result<(), Failure> {
             OTHER_STEPS
         },
     };
+    if let Some(folder) = &args.out {
+        check_folder(folder, &[RESULT], args.force)?;
+    }
     let outcomes = brief.case.run()?;
     let answer = studies(&brief.case, &outcomes, &brief.told, &wish)?;
     if let Some(folder) = &args.out {
@@ -145,7 +161,7 @@ fn files(answer: &StudyAnswer, folder: &Path, marks: &Marks) -> Result<Vec<NewFi
     };
     let json = serde_json::to_vec_pretty(answer).map_err(|error| cannot(&error))?;
     let drawn = study_pictures(answer, marks).map_err(|error| cannot(&error))?;
-    let mut files = vec![NewFile::new(folder.join("study.json"), json)];
+    let mut files = vec![NewFile::new(folder.join(RESULT), json)];
     files.extend(picture_files(folder, &drawn).map_err(|error| cannot(&error))?);
     Ok(files)
 }

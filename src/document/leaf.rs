@@ -7,7 +7,7 @@ use schemars::{JsonSchema, Schema, SchemaGenerator, json_schema};
 use serde::{Deserialize, Deserializer};
 use toml::{Spanned, Value};
 
-use crate::units::{Measure, UnitProblem, parse};
+use crate::units::{Measure, UnitProblem, meant, parse};
 
 /// What a leaf of a document can hold.
 pub trait LeafValue: Sized {
@@ -153,14 +153,19 @@ impl<M: Measure> LeafValue for M {
         };
         match value {
             Value::String(text) => parse(text),
-            Value::Integer(_) | Value::Float(_) => Err(UnitProblem {
-                found: describe(value),
-                allowed: units(),
-                remedy: format!(
-                    "write \"{value} {}\" if that is what is meant",
-                    M::UNITS.first().map_or("", |unit| unit.symbol)
-                ),
-            }),
+            Value::Integer(_) | Value::Float(_) => {
+                let number = value
+                    .as_float()
+                    .or(value.as_integer().map(|whole| whole as f64));
+                Err(UnitProblem {
+                    found: describe(value),
+                    allowed: units(),
+                    remedy: format!(
+                        "write \"{}\" if that is what is meant",
+                        meant::<M>(number.unwrap_or(0.0))
+                    ),
+                })
+            }
             _ => Err(other_type(value, &units(), &format!("\"{}\"", M::EXAMPLE))),
         }
     }

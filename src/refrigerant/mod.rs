@@ -105,13 +105,13 @@ impl FromStr for Refrigerant {
     ///
     /// # Errors
     ///
-    /// [`UnknownRefrigerant`] names those held and the nearest one.
+    /// [`UnknownRefrigerant`] names those held and the one that is meant, where it is a slip.
     ///
     /// ```
     /// use winterledger::refrigerant::Refrigerant;
     /// assert_eq!("r-1234YF".parse(), Ok(Refrigerant::R1234yf));
-    /// let refused = "R404A".parse::<Refrigerant>().unwrap_err();
-    /// assert!(refused.to_string().contains("nearest: R410A"));
+    /// let refused = "R410".parse::<Refrigerant>().unwrap_err();
+    /// assert!(refused.to_string().contains("did you mean R410A?"));
     /// ```
     fn from_str(text: &str) -> Result<Self, Self::Err> {
         let plain = |name: &str| name.trim().replace(['-', ' '], "").to_ascii_lowercase();
@@ -123,23 +123,22 @@ impl FromStr for Refrigerant {
                 found: text.to_owned(),
                 nearest: Refrigerant::ALL
                     .into_iter()
-                    .map(|held| (strsim::jaro_winkler(&plain(held.name()), &wanted), held))
-                    .filter(|(likeness, _)| *likeness >= LEAST_LIKENESS)
-                    .max_by(|(left, _), (right, _)| left.total_cmp(right))
-                    .map(|(_, held)| held),
+                    .find(|held| is_slip(&plain(held.name()), &wanted)),
             })
     }
 }
 
-/// Below this Jaro-Winkler likeness a name is not offered as the nearest one.
-const LEAST_LIKENESS: f64 = 0.6;
+/// Whether a number is another with one sign too many or too few: numbers that differ in a sign are other refrigerants.
+fn is_slip(held: &str, found: &str) -> bool {
+    held.len() != found.len() && strsim::levenshtein(held, found) == 1
+}
 
 /// The text names no refrigerant that is held.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct UnknownRefrigerant {
     /// What was written.
     pub found: String,
-    /// The held refrigerant whose name is most like it, when one is.
+    /// The held refrigerant that is meant, where a sign is missing or too many.
     pub nearest: Option<Refrigerant>,
 }
 
@@ -152,7 +151,7 @@ impl fmt::Display for UnknownRefrigerant {
             self.found
         )?;
         match self.nearest {
-            Some(nearest) => write!(formatter, "; nearest: {nearest}"),
+            Some(nearest) => write!(formatter, "; did you mean {nearest}?"),
             None => Ok(()),
         }
     }
@@ -188,6 +187,10 @@ mod tests {
         for held in Refrigerant::ALL {
             assert!(text.contains(held.name()), "{text}");
         }
-        assert_eq!("water".parse::<Refrigerant>().unwrap_err().nearest, None);
+        // Other refrigerants, not slips.
+        for other in ["R454B", "R22", "R744", "R404A", "water"] {
+            let refused = other.parse::<Refrigerant>().unwrap_err();
+            assert_eq!(refused.nearest, None, "{other}");
+        }
     }
 }

@@ -12,4 +12,4 @@ mod text;
 pub use fuel::{CalorificBasis, CalorificValue, Fuel, FuelUnit};
 pub use measures::*;
 pub use money::{Currency, Money, Price, parse_price};
-pub use text::{Measure, Unit, UnitProblem, as_set, parse, split_number};
+pub use text::{Measure, Unit, UnitProblem, as_set, meant, parse, split_number};

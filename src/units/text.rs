@@ -118,11 +118,15 @@ pub fn parse<M: Measure>(text: &str) -> Result<M, UnitProblem> {
     };
     let canonical = M::UNITS.first().map_or("", |unit| unit.symbol);
     if symbol.is_empty() && !canonical.is_empty() {
-        let remedy = format!(
-            "write \"{} {canonical}\" if that is what is meant",
-            text.trim()
-        );
+        let remedy = format!("write \"{}\" if that is what is meant", meant::<M>(number));
         return Err(problem(format!("\"{text}\" has no unit"), remedy));
+    }
+    if let Some(comma) = with_point(text) {
+        let remedy = format!("write a point before the decimals: {comma}");
+        return Err(problem(
+            format!("\"{text}\" has a comma in its number"),
+            remedy,
+        ));
     }
     let wanted = fold(symbol);
     match M::UNITS.iter().find(|unit| fold(unit.symbol) == wanted) {
@@ -132,6 +136,48 @@ pub fn parse<M: Measure>(text: &str) -> Result<M, UnitProblem> {
             write,
         )),
     }
+}
+
+/// What a number without its unit is likely to mean: a share below one a percentage, anything else in the unit that brings it nearest to
+/// what is usual.
+pub fn meant<M: Measure>(number: f64) -> String {
+    let Some(first) = M::UNITS.first() else {
+        return format!("{number}");
+    };
+    if first.symbol == "%" && number.abs() <= 1.0 {
+        // Tenths of a per mille are rounding.
+        return format!("{} %", as_set(number * 100.0));
+    }
+    let usual = split_number(M::EXAMPLE).and_then(|(usual, symbol)| {
+        let unit = M::UNITS
+            .iter()
+            .find(|unit| fold(unit.symbol) == fold(symbol))?;
+        Some(usual * unit.factor)
+    });
+    let far = |factor: f64| usual.map_or(0.0, |usual| (number.abs() * factor / usual).ln().abs());
+    let of = M::UNITS.iter().filter(|unit| unit.offset == 0.0);
+    let nearest = of.min_by(|a, b| far(a.factor).total_cmp(&far(b.factor)));
+    format!("{number} {}", nearest.unwrap_or(first).symbol)
+}
+
+/// A number with a comma in it as it would be written with a point, and without a mark where the comma may group thousands.
+fn with_point(text: &str) -> Option<String> {
+    let (before, after) = text.split_once(',')?;
+    let decimals = after.chars().take_while(char::is_ascii_digit).count();
+    let whole = before.trim().trim_start_matches(['-', '−', '+']);
+    if decimals == 0 || whole.is_empty() || !whole.chars().all(|c| c.is_ascii_digit()) {
+        return None;
+    }
+    let pointed = format!("\"{}.{}\"", before.trim(), after.trim());
+    Some(if decimals == 3 {
+        format!(
+            "{pointed}, or \"{}{}\" where the comma groups thousands",
+            before.trim(),
+            after.trim()
+        )
+    } else {
+        pointed
+    })
 }
 
 /// The accepted units in words.
@@ -172,6 +218,21 @@ pub fn as_set(value: f64) -> String {
 mod tests {
     use super::*;
     use proptest::prelude::*;
+
+    #[test]
+    fn a_missing_unit_or_a_comma_is_answered_with_what_is_meant() {
+        use crate::units::{HeatLossCoefficient, Power, Share, Temperature};
+        assert_eq!(meant::<Share>(0.19), "19 %");
+        assert_eq!(meant::<Share>(85.0), "85 %");
+        assert_eq!(meant::<Power>(540.0), "540 W");
+        assert_eq!(meant::<Power>(6.0), "6 kW");
+        assert_eq!(meant::<HeatLossCoefficient>(190.0), "190 W/K");
+        assert_eq!(meant::<Temperature>(55.0), "55 °C");
+        let comma = parse::<HeatLossCoefficient>("190,5 W/K").unwrap_err();
+        assert!(comma.remedy.contains("\"190.5 W/K\""), "{comma:?}");
+        let thousands = parse::<Power>("13,500 W").unwrap_err();
+        assert!(thousands.remedy.contains("\"13500 W\""), "{thousands:?}");
+    }
 
     #[test]
     fn numbers_are_split_from_their_units() {

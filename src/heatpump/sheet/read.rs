@@ -163,7 +163,7 @@ fn read_machine(
                     format!("refrigerant \"{}\" is not held", unknown.found),
                     format!("one of {}", Refrigerant::names()),
                     unknown.nearest.map_or_else(
-                        || "a machine with another refrigerant cannot be modelled".to_owned(),
+                        || "a machine with another refrigerant cannot be modelled; a typical machine of its rated output may stand in".to_owned(),
                         |nearest| format!("did you mean \"{nearest}\"?"),
                     ),
                 );

@@ -98,6 +98,7 @@ pub(super) fn swings(
 fn end_text(value: f64, unit: &str, marks: &Marks) -> String {
     match unit {
         "× today's" => format!("× {}", marks.number(value, 2)),
+        _ if unit.starts_with('×') => format!("{} {unit}", marks.number(value, 2)),
         "" => format!("{} %", marks.number(value * 100.0, 0)),
         _ => format!("{} {unit}", marks.number(value, 0)),
     }
