@@ -98,7 +98,7 @@ fn wrong_input_ends_with_status_1_and_names_every_problem() {
     .assert()
     .code(1);
     let text = String::from_utf8(output.get_output().stderr.clone()).unwrap();
-    assert!(text.contains("nearest is R1234yf"), "{text}");
+    assert!(text.contains("did you mean R1234yf?"), "{text}");
     cycle(&["--refrigerant", "R32"]).assert().code(2);
 }
 

@@ -138,8 +138,8 @@ pub fn parse<M: Measure>(text: &str) -> Result<M, UnitProblem> {
     }
 }
 
-/// What a number without its unit is likely to mean: a share below one a percentage, anything else in the unit that brings it nearest to
-/// what is usual.
+/// What a number without its unit is likely to mean: a share below one a percentage, anything else in the first unit or another prefix of
+/// it, whichever brings it nearest to what is usual.
 pub fn meant<M: Measure>(number: f64) -> String {
     let Some(first) = M::UNITS.first() else {
         return format!("{number}");
@@ -155,7 +155,9 @@ pub fn meant<M: Measure>(number: f64) -> String {
         Some(usual * unit.factor)
     });
     let far = |factor: f64| usual.map_or(0.0, |usual| (number.abs() * factor / usual).ln().abs());
-    let of = M::UNITS.iter().filter(|unit| unit.offset == 0.0);
+    // Units that differ by their prefix alone: W and kW.
+    let akin = |symbol: &str| first.symbol.ends_with(symbol) || symbol.ends_with(first.symbol);
+    let of = M::UNITS.iter().filter(|unit| akin(unit.symbol));
     let nearest = of.min_by(|a, b| far(a.factor).total_cmp(&far(b.factor)));
     format!("{number} {}", nearest.unwrap_or(first).symbol)
 }
