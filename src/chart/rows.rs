@@ -11,6 +11,8 @@ use super::scene::{MARGIN, Scene};
 const RIGHT: f64 = 22.0;
 /// Least gap between a row's name and its figure.
 const GAP: f64 = 28.0;
+/// From a row's name down to its figure where a narrow picture has no room for both beside each other.
+const SECOND_LINE: f64 = 20.0;
 
 /// Where rows stand and where a value lies along them.
 pub(super) struct Rows {
@@ -23,8 +25,10 @@ pub(super) struct Rows {
     /// The right one.
     pub right: f64,
     row: f64,
-    /// From a row's top to the foot of its name.
+    /// From a row's top to the foot of what is written above its marks.
     line: f64,
+    /// From its name down to its figure; 0 beside each other.
+    second: f64,
     axis: Axis,
 }
 
@@ -48,15 +52,18 @@ impl Rows {
         sizes: &RowSizes,
     ) -> Self {
         let top = scene.heading(title, subtitle) + 6.0;
-        let bottom = top + sizes.row * count as f64 + 6.0;
+        let second = if scene.narrow() { SECOND_LINE } else { 0.0 };
+        let row = sizes.row + second;
+        let bottom = top + row * count as f64 + 6.0;
         scene.height = bottom + 52.0;
         let rows = Self {
             top,
             bottom,
             left: MARGIN + sizes.left,
             right: scene.width - MARGIN - RIGHT,
-            row: sizes.row,
-            line: sizes.line,
+            row,
+            line: sizes.line + second,
+            second,
             axis,
         };
         for (value, text) in &rows.axis.ticks {
@@ -76,7 +83,7 @@ impl Rows {
         self.left + (value - low) / (high - low) * (self.right - self.left)
     }
 
-    /// Foot of the name of a row.
+    /// Foot of what is written above the marks of a row.
     pub fn line(&self, row: usize) -> f64 {
         self.top + self.row * row as f64 + self.line
     }
@@ -92,12 +99,18 @@ impl Rows {
         ticks.map_or(1.0, |pair| pair[1].0 - pair[0].0)
     }
 
-    /// Writes a row's figure and as much of its name as leaves it room.
+    /// Writes a row's figure and as much of its name as leaves it room, or as there is room for above it.
     pub fn label(&self, scene: &mut Scene, row: usize, name: &str, (figure, kind): (&str, Type)) {
-        let room = scene.width - 2.0 * MARGIN - kind.width(figure) - GAP;
+        let beside = if self.second > 0.0 {
+            0.0
+        } else {
+            kind.width(figure) + GAP
+        };
+        let room = scene.width - 2.0 * MARGIN - beside;
         let name = font::fit(named(name), BODY, Weight::Regular, room);
         let line = self.line(row);
-        scene.plate(&name, (MARGIN, line), Anchor::Start, Type::body());
+        let name_at = (MARGIN, line - self.second);
+        scene.plate(&name, name_at, Anchor::Start, Type::body());
         scene.plate(figure, (scene.width - MARGIN, line), Anchor::End, kind);
     }
 
