@@ -39,7 +39,8 @@ pub(super) fn facts(estimate: &Estimate, choices: &[&Value]) -> Vec<(&'static st
     if let Some((first, others)) = looked_at.split_first()
         && !first.swings.is_empty()
     {
-        let mut sources: Vec<&str> = first.swings.iter().map(|s| s.from.as_str()).collect();
+        let from = first.swings.iter().flat_map(|swing| swing.from.split("; "));
+        let mut sources: Vec<&str> = from.collect();
         sources.sort_unstable();
         sources.dedup();
         let mut moved = json!(first);
